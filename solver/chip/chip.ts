@@ -1,0 +1,126 @@
+import type { FluidSpec } from '../fluid/spec.ts';
+import type { Profile } from '../section/profile.ts';
+
+/**
+ * The chip: the one thing that is edited. Plan lengths and depths are whole nanometres, so nothing
+ * drifts and masks are exact; everything else is SI. Immutable: an edit makes a new chip that shares
+ * what did not change, so identity (===) tells what did.
+ */
+
+/** Whole nanometres. */
+export type Nm = number;
+export type Point = readonly [Nm, Nm];
+export type LengthUnit = 'nm' | 'um' | 'mm' | 'cm' | 'm';
+
+export interface Chip {
+  readonly name: string;
+  /** A caption or remark kept with the chip; '' where none. */
+  readonly note: string;
+  /** The unit in which the description gives plan lengths; kept so that it is written back alike. */
+  readonly lengthUnit: LengthUnit;
+  readonly outline: { readonly width: Nm; readonly height: Nm };
+  readonly layers: readonly Layer[];
+  readonly channels: readonly Channel[];
+  readonly chambers: readonly Chamber[];
+  readonly vias: readonly Via[];
+  readonly ports: readonly Port[];
+  readonly fluid: FluidSpec;
+  readonly targets: readonly Target[];
+  readonly limits: readonly Limit[];
+}
+
+/** A tolerance: a share of the nominal value, or a length in nanometres. */
+export type Tolerance = { readonly share: number } | { readonly length: Nm };
+
+export interface Layer {
+  readonly id: string;
+  readonly depth: Nm;
+  readonly profile: Profile;
+  /** Radius that fabrication gives re-entrant plan corners; 0 is sharp, where no peak can be quoted. */
+  readonly fillet: Nm;
+  readonly tolerance?: { readonly depth?: Tolerance; readonly width?: Tolerance };
+  readonly roof?: Roof;
+}
+
+/** A soft lid. */
+export interface Roof {
+  /** Young's modulus, Pa */
+  readonly modulus: number;
+  /** m */
+  readonly thickness: number;
+  readonly poisson: number;
+  /** Chosen by thickness where absent. */
+  readonly law?: 'thick' | 'plate';
+  /** The fitted factor of the thick law. */
+  readonly constant?: number;
+}
+
+export interface Channel {
+  readonly id: string;
+  readonly layer: string;
+  /** Centreline, at least two different points. */
+  readonly path: readonly Point[];
+  /** Mask width at the first and at the last point; linear along the length between. */
+  readonly width: readonly [Nm, Nm];
+  /** Radius of the centreline at inner vertices; 0 is a mitred corner. */
+  readonly bendRadius: Nm;
+}
+
+export interface Chamber {
+  readonly id: string;
+  readonly layer: string;
+  /** A simple polygon, not closed by repetition, either direction. */
+  readonly outline: readonly Point[];
+}
+
+export interface Via {
+  readonly id: string;
+  readonly at: Point;
+  readonly layers: readonly [string, string];
+  readonly diameter: Nm;
+}
+
+export interface Port {
+  readonly id: string;
+  readonly at: Point;
+  readonly layer: string;
+  /** Hole; 0 puts the port at the end of the centreline itself. */
+  readonly diameter: Nm;
+  readonly drive: Drive;
+  /** In series, from the outside to the chip; metres. */
+  readonly tubing: readonly { readonly bore: number; readonly length: number }[];
+}
+
+export type Drive =
+  /** Gauge, Pa */
+  | { readonly kind: 'pressure'; readonly pressure: number }
+  /** m^3/s, into the chip positive */
+  | { readonly kind: 'flow'; readonly flow: number }
+  /** Height of a reservoir's free surface above the chip, m */
+  | { readonly kind: 'head'; readonly head: number }
+  | { readonly kind: 'closed' };
+
+/** What the designer wants: `share` of the total that enters the chip, or `flow` (m^3/s), `within` a share. */
+export type Target = ({ readonly port: string } | { readonly channel: string }) &
+  ({ readonly share: number } | { readonly flow: number }) & { readonly within: number };
+
+export interface LimitPlace {
+  readonly name: string;
+  /** An id, or a route from port to port; the whole chip where absent. */
+  readonly where?: string | readonly [string, string];
+  /** m; with it the wall-hugging path is judged too. */
+  readonly cellDiameter?: number;
+}
+export type Limit = LimitPlace &
+  (
+    | { readonly shear: number }
+    | { readonly floor: readonly [number, number]; readonly area: number }
+    /** [time s, stress Pa], times increasing. */
+    | { readonly curve: readonly (readonly [number, number])[] }
+    | {
+        readonly law: { readonly constant: number; readonly stress: number; readonly time: number };
+        /** Share, 0 to 1. */
+        readonly damage: number;
+        readonly passes: number;
+      }
+  );

@@ -1,0 +1,15 @@
+import { defineConfig } from 'vitest/config';
+
+// One runner for the unit tests beside the code and for what spans folders.
+export default defineConfig({
+  root: new URL('..', import.meta.url).pathname,
+  test: {
+    include: ['{solver,db,main,renderer}/**/*.test.{ts,tsx}', 'test/**/*.test.ts'],
+    exclude: ['node_modules/**', 'dist/**'],
+    pool: 'forks',
+    maxWorkers: 2,
+    testTimeout: 60_000,
+    hookTimeout: 60_000,
+    reporters: ['default', './test/house/count-reporter.ts'],
+  },
+});
