@@ -12,9 +12,21 @@ export type FluidSpec =
       readonly massFraction?: number;
       readonly volumeFraction?: number;
     }
+  /**
+   * The user's own measurements against temperature, two or more rows, temperatures (K) strictly
+   * increasing: interpolated at `temperature` without overshoot, never beyond the ends.
+   */
+  | { readonly temperature: number; readonly table: readonly MeasuredRow[] }
   /** Pa s, kg/m^3 */
   | { readonly viscosity: number; readonly density: number }
   | { readonly density: number; readonly shear: ShearModel };
+
+/** K, Pa s, kg/m^3 */
+export interface MeasuredRow {
+  readonly temperature: number;
+  readonly viscosity: number;
+  readonly density: number;
+}
 
 /** Shear-thinning media: apparent viscosity as a function of shear rate (1/s). */
 export type ShearModel =
