@@ -1,0 +1,59 @@
+import { Problem } from '../problem/problem.ts';
+import { ellipseSection } from './ellipse.ts';
+import { EQUILATERAL, equilateralSection } from './equilateral.ts';
+import type { Profile } from './profile.ts';
+import { rectangleSection } from './rectangle.ts';
+import type { Section } from './section.ts';
+
+export type { Section } from './section.ts';
+
+/**
+ * The section of a profile with the given mask width and layer depth, metres. A circle's bore is its
+ * width and must equal the depth; a polygon takes neither. `where` is named by a `Problem`.
+ */
+export function sectionOf(profile: Profile, width: number, depth: number, where = ''): Section {
+  checkSize(profile, width, depth, where);
+  switch (profile.kind) {
+    case 'rectangle':
+      return rectangleSection(width, depth);
+    case 'circle':
+    case 'ellipse':
+      return ellipseSection(width, depth);
+    case 'triangle':
+      if (Math.abs(depth / width - EQUILATERAL) < 1e-12) return equilateralSection(width);
+      break;
+    default:
+  }
+  throw new Problem(
+    'profile',
+    `A ${profile.kind} section cannot be solved yet.`,
+    where,
+    'Use a rectangle, a circle, an ellipse or an equilateral triangle.',
+  );
+}
+
+/** Throws unless width and depth are lengths that the profile can have. */
+export function checkSize(profile: Profile, width: number, depth: number, where: string): void {
+  if (profile.kind === 'polygon') return;
+  for (const [name, value] of [
+    ['width', width],
+    ['depth', depth],
+  ] as const) {
+    if (!(value > 0 && value < Number.POSITIVE_INFINITY)) {
+      throw new Problem(
+        'profile',
+        `The ${name} of the section is ${value} m.`,
+        where,
+        `Give a ${name} above zero.`,
+      );
+    }
+  }
+  if (profile.kind === 'circle' && Math.abs(width - depth) > 1e-9 * depth) {
+    throw new Problem(
+      'profile',
+      `A round bore ${width} m wide cannot lie in a layer ${depth} m deep.`,
+      where,
+      'Make width and depth equal, or choose an ellipse.',
+    );
+  }
+}
