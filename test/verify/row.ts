@@ -1,5 +1,5 @@
 import { appendFileSync, mkdirSync } from 'node:fs';
-import { join } from 'node:path';
+import { join, relative } from 'node:path';
 import { expect, test } from 'vitest';
 
 /** What a row of the verification table claims, beside the error that the run found. */
@@ -15,6 +15,12 @@ export interface Claim {
   readonly tolerance: number;
 }
 
+/** A claim with the error that its check found (null where that was not a number) and the file it ran in. */
+export interface Row extends Claim {
+  readonly error: number | null;
+  readonly file: string;
+}
+
 const folder = process.env.CHANNELWRIGHT_VERIFY;
 
 /**
@@ -26,7 +32,12 @@ export function verify(claim: Claim, measure: () => number | Promise<number>): v
     const error = await measure();
     if (folder) {
       mkdirSync(folder, { recursive: true });
-      appendFileSync(join(folder, `rows-${process.pid}.jsonl`), `${JSON.stringify({ ...claim, error })}\n`);
+      const row: Row = {
+        ...claim,
+        error: Number.isFinite(error) ? Math.abs(error) : null,
+        file: relative(process.cwd(), expect.getState().testPath ?? ''),
+      };
+      appendFileSync(join(folder, `rows-${process.pid}.jsonl`), `${JSON.stringify(row)}\n`);
     }
     expect(Number.isFinite(error), `${claim.quantity}: the error is ${error}`).toBe(true);
     expect(Math.abs(error)).toBeLessThanOrEqual(claim.tolerance);
