@@ -1,0 +1,52 @@
+import type { Chamber, Channel, Chip, Port, Target } from '../../solver/chip/chip.ts';
+
+/** What a maker puts into a chip. */
+export interface Made {
+  readonly channels: readonly Channel[];
+  readonly chambers: readonly Chamber[];
+  readonly ports: readonly Port[];
+  readonly targets: readonly Target[];
+}
+
+export const NOTHING: Made = { channels: [], chambers: [], ports: [], targets: [] };
+
+/** What came of making: parts, or one sentence that says why it cannot be made and what would help. */
+export type Making = { readonly made: Made } | { readonly refusal: string };
+
+/**
+ * A maker keeps nothing beside the drawing: what it made is recognised by its name and shape, and
+ * its wishes are read back from there. Once someone has reshaped a part by hand it is no longer the
+ * maker's, and says so by not being recognised.
+ */
+export interface Maker<W> {
+  readonly kind: MakerKind;
+  make(name: string, wishes: W): Making;
+  /** The wishes that make exactly what the chip holds under this name, or null. */
+  read(chip: Chip, name: string): W | null;
+}
+
+export type MakerKind = 'serpentine' | 'split tree' | 'gradient tree' | 'row of chambers' | 'posts';
+
+/** "tree 1" of "tree 1-2-3"; the whole where nothing is numbered behind it. */
+export const familyOf = (id: string): string => id.replace(/(-[0-9a-z]+)+$/, '');
+
+/** Parts of a chip under one name. */
+export function family(chip: Chip, name: string): Made {
+  const of = (id: string): boolean => id === name || id.startsWith(`${name}-`);
+  return {
+    channels: chip.channels.filter((part) => of(part.id)),
+    chambers: chip.chambers.filter((part) => of(part.id)),
+    ports: chip.ports.filter((part) => of(part.id)),
+    targets: chip.targets.filter((target) => of('port' in target ? target.port : target.channel)),
+  };
+}
+
+/** Whether what is there has the shape of what would be made: drives, targets and tubing are the user's. */
+export function sameShape(there: Made, made: Made): boolean {
+  const shape = (part: Made): string =>
+    JSON.stringify([
+      part.channels.map((c) => [c.id, c.layer, c.path, c.width, c.bendRadius]),
+      part.chambers.map((c) => [c.id, c.layer, c.outline]),
+    ]);
+  return shape(there) === shape(made);
+}

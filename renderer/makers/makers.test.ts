@@ -1,0 +1,168 @@
+import { describe, expect, test } from 'vitest';
+import type { Chip } from '../../solver/chip/chip.ts';
+import { pathLength } from '../geometry/path.ts';
+import { emptyChip } from '../testing/chips.ts';
+import { chamberRow } from './chambers.ts';
+import { gradientTree } from './gradient-tree.ts';
+import { familyOf, type Made, type Making } from './made.ts';
+import { posts } from './posts.ts';
+import { serpentine, serpentineReach } from './serpentine.ts';
+import { splitTree } from './split-tree.ts';
+
+const mm = 1_000_000;
+const box = { left: 10 * mm, right: 40 * mm, bottom: 3 * mm, top: 23 * mm };
+const made = (making: Making): Made => {
+  if ('refusal' in making) throw new Error(making.refusal);
+  return making.made;
+};
+const chipOf = (parts: Made): Chip => ({ ...emptyChip(), ...parts });
+
+describe('serpentine', () => {
+  const wishes = {
+    layer: 'flow',
+    length: 150 * mm,
+    box,
+    width: 200_000,
+    gap: 200_000,
+    bendRadius: 0,
+    upright: false,
+  };
+  test.each([
+    [150 * mm, 0, false],
+    [150 * mm, 300_000, false],
+    [31 * mm, 0, false],
+    [400 * mm, 200_000, true],
+  ])('%d nm with bends of %d, upright %s', (length, bendRadius, upright) => {
+    const [channel] = made(serpentine.make('s1', { ...wishes, length, bendRadius, upright })).channels;
+    const got = pathLength(channel!.path, bendRadius);
+    // half a nanometre of rounding at each vertex
+    expect(Math.abs(got - length)).toBeLessThanOrEqual(channel!.path.length);
+    const half = channel!.width[0] / 2;
+    for (const [x, y] of channel!.path) {
+      expect(upright ? x - half : y - half).toBeGreaterThanOrEqual((upright ? box.left : box.bottom) - 1);
+      expect(upright ? x + half : y + half).toBeLessThanOrEqual((upright ? box.right : box.top) + 1);
+    }
+  });
+  test('legs keep their gap', () => {
+    const [channel] = made(
+      serpentine.make('s1', { ...wishes, length: serpentineReach(wishes).most }),
+    ).channels;
+    const xs = [...new Set(channel!.path.map((p) => p[0]))].sort((a, b) => a - b);
+    for (let i = 1; i < xs.length; i += 1) expect(xs[i]! - xs[i - 1]!).toBeGreaterThanOrEqual(400_000);
+  });
+  test('is read back and made again alike', () => {
+    const first = made(serpentine.make('s1', wishes));
+    const back = serpentine.read(chipOf(first), 's1');
+    expect(back).toMatchObject({ width: 200_000, upright: false, bendRadius: 0 });
+    expect(Math.abs(back!.length - wishes.length)).toBeLessThan(50);
+    const longer = made(serpentine.make('s1', { ...back!, length: 100 * mm }));
+    expect(Math.abs(pathLength(longer.channels[0]!.path) - 100 * mm)).toBeLessThan(50);
+  });
+  test('is no serpentine once a vertex was moved', () => {
+    const first = made(serpentine.make('s1', wishes));
+    const path = first.channels[0]!.path.map((p, i) => (i === 3 ? ([p[0], p[1] + 9000] as const) : p));
+    const moved = { ...first, channels: [{ ...first.channels[0]!, path }] };
+    expect(serpentine.read(chipOf(moved), 's1')).toBeNull();
+  });
+  test('says what fits', () => {
+    expect(serpentine.make('s1', { ...wishes, length: 10 * mm })).toMatchObject({
+      refusal: expect.stringContaining('30.00'),
+    });
+    expect(serpentine.make('s1', { ...wishes, length: 9000 * mm })).toMatchObject({
+      refusal: expect.stringContaining('At most'),
+    });
+  });
+});
+
+describe('split tree', () => {
+  const wishes = {
+    layer: 'flow',
+    levels: 3,
+    box,
+    trunkWidth: 400_000,
+    leafWidth: 100_000,
+    joining: false,
+    portDiameter: 750_000,
+  };
+  test('has 2^n equal paths, ports and shares', () => {
+    const tree = made(splitTree.make('tree 1', wishes));
+    expect(tree.channels).toHaveLength(15);
+    expect(tree.ports).toHaveLength(9);
+    expect(tree.targets).toHaveLength(8);
+    const leafLength = new Set(
+      tree.channels.filter((c) => c.id.startsWith('tree 1-3-')).map((c) => pathLength(c.path)),
+    );
+    expect(Math.max(...leafLength) - Math.min(...leafLength)).toBeLessThanOrEqual(1);
+    expect(tree.channels[0]!.width[0]).toBe(400_000);
+    expect(tree.channels.at(-1)!.width[0]).toBe(100_000);
+    // each branch begins where its parent ends
+    for (const branch of tree.channels.slice(1)) {
+      const [level, index] = branch.id.split('-').slice(1).map(Number);
+      const parent = tree.channels.find((c) => c.id === `tree 1-${level! - 1}-${(index! + 1) >> 1}`)!;
+      expect(branch.path[0]).toEqual(parent.path.at(-1));
+    }
+  });
+  test.each([false, true])('is read back, joining %s', (joining) => {
+    const asked = { ...wishes, joining };
+    expect(splitTree.read(chipOf(made(splitTree.make('tree 1', asked))), 'tree 1')).toEqual(asked);
+  });
+  test('refuses with a reason', () => {
+    for (const bad of [
+      { levels: 0 },
+      { levels: 2.5 },
+      { leafWidth: 9 * mm },
+      { box: { ...box, right: box.left } },
+    ])
+      expect(splitTree.make('t', { ...wishes, ...bad })).toHaveProperty('refusal');
+  });
+});
+
+test('a row of chambers joins end to end and is read back', () => {
+  const wishes = { layer: 'flow', box, count: 5, chamberLength: 3 * mm, channelWidth: 200_000 };
+  const row = made(chamberRow.make('row 1', wishes));
+  expect(row.chambers).toHaveLength(5);
+  expect(row.channels).toHaveLength(6);
+  expect(row.channels[1]!.path[0]![0]).toBe(row.chambers[0]!.outline[1]![0]);
+  expect(chamberRow.read(chipOf(row), 'row 1')).toEqual(wishes);
+  expect(chamberRow.make('row 1', { ...wishes, chamberLength: 7 * mm })).toHaveProperty('refusal');
+  expect(chamberRow.make('row 1', { ...wishes, count: 0 })).toHaveProperty('refusal');
+});
+
+test('posts leave their gaps and are read back', () => {
+  const wishes = { layer: 'flow', box, gap: 50_000, post: 150_000, along: 300_000 };
+  const filter = made(posts.make('posts 1', wishes));
+  expect(filter.channels).toHaveLength(100);
+  expect(filter.channels[1]!.path[0]![1] - filter.channels[0]!.path[0]![1]).toBe(200_000);
+  expect(posts.read(chipOf(filter), 'posts 1')).toEqual(wishes);
+  expect(posts.make('p', { ...wishes, gap: 30 * mm })).toHaveProperty('refusal');
+  expect(posts.make('p', { ...wishes, gap: 1000, post: 1000 })).toHaveProperty('refusal');
+});
+
+test('a gradient tree gains one outlet per stage and is read back', () => {
+  const wishes = {
+    layer: 'flow',
+    box,
+    inlets: 2,
+    stages: 3,
+    width: 100_000,
+    mixing: 15 * mm,
+    portDiameter: 750_000,
+  };
+  const tree = made(gradientTree.make('gradient 1', wishes));
+  expect(tree.channels.filter((c) => c.id.endsWith('-x'))).toHaveLength(3);
+  expect(tree.ports).toHaveLength(2 + 5);
+  for (const c of tree.channels.filter((part) => /-[123]-\d+$/.test(part.id)))
+    expect(Math.abs(pathLength(c.path) - 15 * mm)).toBeLessThan(100);
+  expect(gradientTree.read(chipOf(tree), 'gradient 1')).toMatchObject({
+    inlets: 2,
+    stages: 3,
+    width: 100_000,
+  });
+  expect(gradientTree.make('g', { ...wishes, width: 5 * mm })).toHaveProperty('refusal');
+  expect(gradientTree.make('g', { ...wishes, mixing: 900 * mm })).toHaveProperty('refusal');
+});
+
+test('a part knows its family', () => {
+  expect(familyOf('tree 1-2-3')).toBe('tree 1');
+  expect(familyOf('feed')).toBe('feed');
+});
