@@ -7,9 +7,9 @@ import {
   figure,
   lengthFigure,
   number,
+  showIn,
   typed,
   unitFor,
-  unitText,
 } from './figure.ts';
 
 const plain = (text: string) => text.replaceAll('\u202f', ' ');
@@ -21,11 +21,11 @@ describe('figures', () => {
     [1.83, 'stress', { digits: 3 }, '1.83 Pa'],
     [2.464e-9 / 60, 'flow', {}, '2.464 µL/min'],
     [140e-6, 'length', { digits: 3 }, '140 µm'],
-    [4.06e13, 'resistance', {}, '4.06 × 10¹³ Pa·s/m³'],
+    [4.06e13, 'resistance', {}, '4.060 × 10¹³ Pa·s/m³'],
     [-0.014, 'share', { digits: 2, signed: true }, '−1.4 %'],
     [0.008, 'share', { digits: 1, signed: true }, '+0.8 %'],
     [298.15, 'temperature', { digits: 3 }, '25.0 °C'],
-    [0, 'stress', {}, '0 kPa'],
+    [0, 'stress', {}, '0 Pa'],
   ] as const)('%s as %s', (value, kind, style, text) => expect(plain(figure(value, kind, style))).toBe(text));
 
   test('no more digits than the error leaves', () => {
@@ -40,16 +40,15 @@ describe('figures', () => {
   });
   test('plain numbers', () => {
     expect(number(1000, 4)).toBe('1000');
-    expect(number(12345, 4)).toBe('12,345');
+    expect(number(12345, 5)).toBe('12,345');
     expect(number(-0.5, 2)).toBe('−0.50');
     expect(plain(number(1.2e-7, 2))).toBe('1.2 × 10⁻⁷');
   });
-  test('units as people read them', () => {
-    expect(unitText('uL/min')).toBe('µL/min');
-    expect(unitText('Pa.s/m^3')).toBe('Pa·s/m³');
-    expect(unitText('s^-1')).toBe('s⁻¹');
-    expect(unitText('min')).toBe('min');
+  test('units that a person chose come first', () => {
     expect(unitFor(2e-4, 'length')).toBe('um');
+    showIn({ pressure: 'mbar' });
+    expect(plain(figure(31_200, 'pressure', { digits: 3 }))).toBe('312 mbar');
+    showIn({});
   });
   test('as typed', () => {
     expect(typed(120e-6, 'length', 'um')).toBe('120 µm');

@@ -1,24 +1,20 @@
-import { inUnit, KINDS, type Kind } from '../../solver/chip/units.ts';
+import { inUnit, type Kind } from '../../solver/chip/units.ts';
+import { bestUnit, formatNumber, unitInPrint } from '../../solver/chip/units-format.ts';
 
-const SUPERSCRIPTS = '⁰¹²³⁴⁵⁶⁷⁸⁹';
-const MINUS = '−';
 /** A space that neither breaks nor stretches, between a figure and its unit. */
 const THIN = '\u202f';
 
-/** Units as people read them: "uL/min" is "µL/min", "Pa.s/m^3" is "Pa·s/m³". */
-export function unitText(unit: string): string {
-  return unit
-    .replace(/\bu(?=[A-Za-z])/g, 'µ')
-    .replace('deg', '°')
-    .replace(/\./g, '·')
-    .replace(
-      /\^(-?)(\d)/g,
-      (_, sign: string, digit: string) => `${sign && '⁻'}${SUPERSCRIPTS[Number(digit)]}`,
-    );
+/** Units that a person chose to see, by kind; the ladder of the kind where there is none. */
+export type UnitHabit = Readonly<Partial<Record<Kind, string>>>;
+let habit: UnitHabit = {};
+
+/** Sets the units in which figures are shown from now on. */
+export function showIn(units: UnitHabit): void {
+  habit = units;
 }
 
 export interface Style {
-  /** Fixed unit; the ladder of the kind where absent. */
+  /** Fixed unit; the person's habit or the ladder of the kind where absent. */
   readonly unit?: string;
   /** Significant digits, 4 where nothing limits them. */
   readonly digits?: number;
@@ -28,37 +24,23 @@ export interface Style {
   readonly signed?: boolean;
 }
 
-/** Significant digits that a relative error leaves standing: 2 at 5 %, 3 at 0.5 %; from 2 to 6. */
+/** Significant digits that a relative error leaves standing: 2 at 5 %, 3 at 0.4 %; from 2 to 6. */
 export function digitsFor(error: number): number {
   if (!(error > 0)) return 6;
   return Math.min(6, Math.max(2, Math.floor(-Math.log10(2 * error)) + 1));
 }
 
-/** The unit of the kind's ladder that suits a magnitude. */
-export function unitFor(value: number, kind: Kind): string {
-  const size = Math.abs(value);
-  let unit: string = KINDS[kind].ladder[0]![0];
-  for (const [name, from] of KINDS[kind].ladder) if (size >= from * (1 - 1e-12)) unit = name;
-  return size === 0 ? KINDS[kind].units[1 % KINDS[kind].units.length]! : unit;
-}
+/** The unit in which figures of a kind and about this size are shown. */
+export const unitFor = (value: number, kind: Kind): string => habit[kind] ?? bestUnit(value, kind);
 
-/** A plain number in `digits` significant digits, with a true minus and powers of ten beyond 1e5 and 1e-3. */
+/** A plain number in significant digits, thousands parted. */
 export function number(value: number, digits = 4): string {
-  if (!Number.isFinite(value)) return value > 0 ? 'beyond all' : value < 0 ? 'below all' : 'no number';
-  if (value === 0) return '0';
-  const size = Math.abs(value);
-  const sign = value < 0 ? MINUS : '';
-  if (size >= 1e6 || size < 1e-3) {
-    const [mantissa, exponent] = size.toExponential(Math.min(digits, 3) - 1).split('e');
-    const power = Number(exponent);
-    const raised = [...String(Math.abs(power))].map((digit) => SUPERSCRIPTS[Number(digit)]).join('');
-    return `${sign}${mantissa}\u202f×\u202f10${power < 0 ? '⁻' : ''}${raised}`;
-  }
-  const places = Math.max(0, digits - 1 - Math.floor(Math.log10(size)));
-  const text = places > 0 ? size.toFixed(Math.min(places, 12)) : size.toFixed(0);
+  if (Number.isNaN(value)) return 'no number';
+  const text = formatNumber(value, digits);
   const [wholePart, fraction] = text.split('.');
-  const grouped = wholePart!.length > 4 ? wholePart!.replace(/\B(?=(\d{3})+$)/g, ',') : wholePart!;
-  return `${sign}${grouped}${fraction ? `.${fraction}` : ''}`;
+  if (!/^−?\d{5,}$/.test(wholePart!)) return text.replaceAll(' ', THIN);
+  const grouped = wholePart!.replace(/\B(?=(\d{3})+$)/g, ',');
+  return fraction ? `${grouped}.${fraction}` : grouped;
 }
 
 /** "312 mbar", "2.464 µL/min", "1.83 Pa": an SI value of a kind, with its unit. */
@@ -66,7 +48,8 @@ export function figure(value: number | null | undefined, kind: Kind, style: Styl
   if (value === null || value === undefined) return 'not known';
   const unit = style.unit ?? unitFor(value, kind);
   const text = figureIn(value, unit, style);
-  return unit === '' ? text : `${text}${THIN}${unitText(unit)}`;
+  if (unit === '') return text;
+  return unit === 'deg' ? `${text}°` : `${text}${THIN}${unitInPrint(unit)}`;
 }
 
 /** The figure alone, in a given unit, without it. */
@@ -79,12 +62,11 @@ export function figureIn(value: number, unit: string, style: Style = {}): string
 /** A length of the plan, in nm. */
 export const lengthFigure = (nm: number, style: Style = {}): string => figure(nm / 1e9, 'length', style);
 
-/** A value as it would be typed: shortest decimals that mean the same, plain letters, with its unit. */
+/** A value as it would be typed: the shortest decimals that mean the same, with its unit. */
 export function typed(value: number, kind: Kind, unit: string): string {
-  const inside = inUnit(value, unit);
   // 12 digits hide the rounding of the conversion and nothing a person typed
-  const text = String(Number(inside.toPrecision(12)));
-  return kind === 'number' || unit === '' ? text : `${text} ${unitText(unit)}`;
+  const text = String(Number(inUnit(value, unit).toPrecision(12)));
+  return kind === 'number' || unit === '' ? text : `${text} ${unitInPrint(unit)}`;
 }
 
 const WORDS = [
@@ -103,7 +85,7 @@ const WORDS = [
   'twelve',
 ];
 
-/** Small counts in words, larger ones in figures: "three", "1,204". */
+/** Small counts in words, larger ones in figures: "three", "1204". */
 export const count = (n: number): string => WORDS[n] ?? number(n, String(n).length);
 
 /** "one well", "three wells". */
