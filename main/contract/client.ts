@@ -1,5 +1,6 @@
 import { PROBLEM_KINDS, Problem, type ProblemKind } from '../../solver/problem/problem.ts';
 import type { EventData, EventName, Input, Output, Refusal, Reply, RequestName } from './contract.ts';
+import { decode, encode } from './wire.ts';
 
 /** Carries requests to a host and events back; `loopbackTransport` and the desktop's preload are the two there are. */
 export interface Transport {
@@ -15,6 +16,30 @@ export interface Client {
   /** Calls `listener` for each such event; returns how to stop. */
   on<N extends EventName>(name: N, listener: (data: EventData<N>) => void): () => void;
   close(): void;
+}
+
+const AWAY: Reply = {
+  ok: false,
+  problem: {
+    kind: 'output',
+    what: 'The program does not answer; what was acknowledged is kept.',
+    where: '',
+    remedy: 'Start the program again and open the project.',
+  },
+};
+
+/** A transport's `call` over one that carries bytes; a host that cannot be reached is a refusal that says so. */
+export function overBytes(
+  carry: (name: string, body: Uint8Array<ArrayBuffer>) => Promise<Uint8Array>,
+): Transport['call'] {
+  return async (name, input) => {
+    const body = encode(input);
+    try {
+      return decode(await carry(name, body)) as Reply;
+    } catch {
+      return AWAY;
+    }
+  };
 }
 
 function problemOf(refusal: Refusal): Problem {

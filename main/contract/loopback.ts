@@ -1,6 +1,4 @@
-import type { Transport } from './client.ts';
-import type { Reply } from './contract.ts';
-import { decode, encode } from './wire.ts';
+import { overBytes, type Transport } from './client.ts';
 
 /** Names of the loopback protocol that host and page share. */
 export const REQUEST_PATH = '/api/';
@@ -8,16 +6,6 @@ export const EVENTS_PATH = '/events';
 /** Tells the windows of one browser apart; its presence also keeps other sites' forms from ever fitting. */
 export const WINDOW_HEADER = 'x-channelwright-window';
 export const BODY_TYPE = 'application/x-channelwright';
-
-const AWAY: Reply = {
-  ok: false,
-  problem: {
-    kind: 'output',
-    what: 'The program does not answer; what was acknowledged is kept.',
-    where: '',
-    remedy: 'Start it again and open the project; nothing acknowledged is lost.',
-  },
-};
 
 export interface LoopbackOptions {
   /** '' (the page's own origin) or "http://127.0.0.1:port". */
@@ -34,21 +22,15 @@ export function loopbackTransport(options: LoopbackOptions): Transport {
   const get = options.fetch ?? fetch;
   const headers = { ...options.headers, [WINDOW_HEADER]: options.window };
   return {
-    async call(name, input) {
-      let response: Response;
-      try {
-        response = await get(`${options.origin}${REQUEST_PATH}${name}`, {
-          method: 'POST',
-          headers: { ...headers, 'content-type': BODY_TYPE },
-          body: encode(input),
-        });
-        const body = new Uint8Array(await response.arrayBuffer());
-        if (response.headers.get('content-type') !== BODY_TYPE) return AWAY;
-        return decode(body) as Reply;
-      } catch {
-        return AWAY;
-      }
-    },
+    call: overBytes(async (name, body) => {
+      const response = await get(`${options.origin}${REQUEST_PATH}${name}`, {
+        method: 'POST',
+        headers: { ...headers, 'content-type': BODY_TYPE },
+        body,
+      });
+      if (response.headers.get('content-type') !== BODY_TYPE) throw new Error(`answered ${response.status}`);
+      return new Uint8Array(await response.arrayBuffer());
+    }),
     listen(listener) {
       const stop = new AbortController();
       const follow = async (): Promise<void> => {

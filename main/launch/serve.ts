@@ -1,0 +1,42 @@
+import { join } from 'node:path';
+import { startLoopbackHost } from '../loopback/host.ts';
+import { createSessions } from '../session/sessions.ts';
+import { userDataFolder } from '../user/folder.ts';
+import { openBrowser } from './browser.ts';
+import type { StartOptions } from './options.ts';
+import { builtPage } from './page.ts';
+
+/** Runs the browser host until it is idle or told to stop. */
+export async function serve(
+  root: string,
+  version: string,
+  options: StartOptions,
+  says: (line: string) => void,
+): Promise<void> {
+  const page = await builtPage(root, says);
+  const sessions = createSessions({
+    host: 'browser',
+    dialogs: false,
+    userData: userDataFolder(),
+    assets: join(root, 'assets'),
+    version,
+  });
+  let stopping = false;
+  const host = await startLoopbackHost({
+    sessions,
+    page,
+    port: options.port,
+    idleMs: options.idleMs,
+    onIdle: () => void stop(),
+  });
+  const stop = async (): Promise<void> => {
+    if (stopping) return;
+    stopping = true;
+    await sessions.close();
+    await host.close();
+    process.exit(0);
+  };
+  for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, () => void stop());
+  const opened = options.open && (await openBrowser(host.address));
+  says(opened ? `Channelwright is open in your browser (${host.origin}).` : `Open ${host.address}`);
+}

@@ -1,0 +1,89 @@
+import { open, readdir, stat } from 'node:fs/promises';
+import { homedir } from 'node:os';
+import { basename, dirname, extname, join, resolve } from 'node:path';
+import { replaceFile } from '../../db/place/replace.ts';
+import { Problem } from '../../solver/problem/problem.ts';
+import type { Handlers } from './handlers.ts';
+
+const MOST_LISTED = 5000;
+const MOST_READ = 64 * 1024 * 1024;
+
+/** A path as the person meant it: "~" is their own folder, and it must be complete. */
+function whole(path: string): string {
+  const told = path === '~' || path.startsWith('~/') ? join(homedir(), path.slice(1)) : path;
+  const absolute = resolve(told);
+  if (absolute !== told && !/^([A-Za-z]:)?[\\/]/.test(told))
+    throw new Problem('not-readable', 'The path does not begin at a folder.', path, 'Give the whole path.');
+  return absolute;
+}
+
+function kindOf(name: string): 'project' | 'description' | 'other' {
+  const end = extname(name).toLowerCase();
+  if (end === '.chw') return 'project';
+  return end === '.json' ? 'description' : 'other';
+}
+
+async function startFolder(): Promise<string> {
+  const documents = join(homedir(), 'Documents');
+  const there = await stat(documents).catch(() => null);
+  return there?.isDirectory() ? documents : homedir();
+}
+
+export const fileRequests: Handlers<'files.list' | 'files.read' | 'files.write'> = {
+  'files.list': async (_session, input) => {
+    const folder = input.folder === undefined ? await startFolder() : whole(input.folder);
+    const found = await readdir(folder, { withFileTypes: true }).catch(() => {
+      throw new Problem('not-readable', 'This folder cannot be read.', folder, 'Choose another folder.');
+    });
+    const shown = found
+      .filter((entry) => !entry.name.startsWith('.'))
+      .sort((a, b) => (a.name < b.name ? -1 : 1));
+    const entries = await Promise.all(
+      shown.slice(0, MOST_LISTED).map(async (entry) => {
+        const path = join(folder, entry.name);
+        const there = await stat(path).catch(() => null);
+        if (!there || !(there.isFile() || there.isDirectory())) return null;
+        const kind = there.isDirectory() ? ('folder' as const) : kindOf(entry.name);
+        return { name: entry.name, path, kind, size: there.size, changed: there.mtimeMs };
+      }),
+    );
+    const parent = dirname(folder);
+    return {
+      folder,
+      parent: parent === folder ? null : parent,
+      entries: entries.filter((entry) => entry !== null),
+      more: shown.length > MOST_LISTED,
+    };
+  },
+  'files.read': async (_session, input) => {
+    const path = whole(input.path);
+    return { name: basename(path), bytes: await readBounded(path, MOST_READ) };
+  },
+  'files.write': async (_session, input) => {
+    const path = whole(input.path);
+    await replaceFile(path, input.content, input.replace === true);
+    return { path };
+  },
+};
+
+/** The bytes of an ordinary file of at most `most` bytes. */
+async function readBounded(path: string, most: number): Promise<Uint8Array> {
+  const gone = (): never => {
+    throw new Problem(
+      'not-readable',
+      'This file cannot be read.',
+      path,
+      'Check that it is there and yours to read.',
+    );
+  };
+  const there = await stat(path).catch(gone);
+  if (!there.isFile()) gone();
+  if (there.size > most)
+    throw new Problem('too-many', 'This file is larger than 64 MB.', path, 'Give a smaller one.');
+  const file = await open(path, 'r').catch(gone);
+  try {
+    return new Uint8Array(await file.readFile());
+  } finally {
+    await file.close();
+  }
+}

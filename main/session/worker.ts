@@ -1,0 +1,28 @@
+import { parentPort, workerData } from 'node:worker_threads';
+import { handle } from '../requests/handle.ts';
+import type { FromWorker, SessionSettings, ToWorker } from './messages.ts';
+import { Session } from './session.ts';
+
+/** The thread of one window: requests in, one after another; replies and events out. */
+const port = parentPort!;
+const send = (message: FromWorker, transfer: ArrayBuffer[] = []): void => port.postMessage(message, transfer);
+
+const session = new Session(workerData as SessionSettings, (name, data) =>
+  send({ kind: 'event', name, data: JSON.stringify(data) }),
+);
+
+let last: Promise<void> = Promise.resolve();
+
+async function take(message: ToWorker): Promise<void> {
+  if (message.kind === 'end') {
+    await session.close();
+    port.close();
+    return;
+  }
+  const body = await handle(session, message.name, message.body);
+  send({ kind: 'reply', id: message.id, body }, [body.buffer]);
+}
+
+port.on('message', (message: ToWorker) => {
+  last = last.then(() => take(message));
+});
