@@ -1,0 +1,178 @@
+import { solve } from '../sparse/solve.ts';
+import { divergence, gather, gradient, spread } from './coupling.ts';
+import type { DepthModes } from './depth.ts';
+import type { StokesFactors } from './factors.ts';
+import type { Plane } from './plane.ts';
+
+/** Velocity and pressure, mode by mode of the diagonal basis, layouts as in coupling.ts. */
+export interface StokesFields {
+  readonly patterns: number;
+  readonly inPlane: Float64Array[];
+  readonly across: Float64Array[];
+  readonly pressure: Float64Array[];
+  readonly iterations: number;
+  /** Largest residual of mass conservation over the patterns, of that of the start, in the preconditioner's norm. */
+  readonly residual: number;
+}
+
+/**
+ * Stokes flow between plates at s = +-1, driven by loads f on the in-plane velocity at faces:
+ *   (K + lambda_k / H^2 M) u_k - sum over j of C_jk B^T p_j = m_k f
+ *   (K + lambda'_m / H^2 M) w_m - sum over j of E_jm / H M^T p_j = 0
+ *   sum over k of C_jk B u_k + sum over m of E_jm / H M w_m = 0
+ * by conjugate gradients on the pressure Schur complement, all patterns side by side, preconditioned
+ * as by Cahouet and Chabard 1988 (Int. J. Numer. Methods Fluids 8, 869): inverse mass, and for the
+ * pressure's mean over the depth the inverse Laplacian besides.
+ *
+ * @param loads one per pattern, x then y: 2 x count
+ * @param tolerance of the residual, relative to the start
+ */
+export function solveStokes(
+  plane: Plane,
+  depth: DepthModes,
+  halfDepth: number,
+  factors: StokesFactors,
+  loads: readonly Float64Array[],
+  tolerance: number,
+  mostIterations = 400,
+): StokesFields {
+  const n = loads.length;
+  const N = depth.count;
+  const across = depth.acrossLambda.length;
+  const pressures = depth.coupling.length / N;
+  const corners = plane.mesh.vertexCount;
+  const { count } = plane;
+  const block = corners * n;
+  const make = (modes: number, size: number): Float64Array[] =>
+    Array.from({ length: modes }, () => new Float64Array(size));
+
+  const u = make(N, count * 2 * n);
+  const w = make(across, count * n);
+  const p = make(pressures, block);
+  const r = make(pressures, block);
+  const z = make(pressures, block);
+  const d = make(pressures, block);
+  const s = make(pressures, block);
+  /** A^-1 B^T d of every mode. */
+  const du = make(N, count * 2 * n);
+  const dw = make(across, count * n);
+  const q = new Float64Array(block);
+
+  const conserve = (
+    inPlane: Float64Array[],
+    acrossPart: Float64Array[],
+    sign: number,
+    out: Float64Array[],
+  ) => {
+    for (const part of out) part.fill(0);
+    for (let k = 0; k < N; k += 1) {
+      divergence(plane, inPlane[k], n, sign, q);
+      for (let j = 0; j < pressures; j += 1) axpy(depth.coupling[j * N + k], q, out[j]);
+    }
+    for (let m = 0; m < across; m += 1) {
+      gather(plane, acrossPart[m], n, sign / halfDepth, q);
+      for (let j = 1; j < pressures; j += 1) axpy(depth.acrossCoupling[j * across + m], q, out[j]);
+    }
+  };
+  const precondition = () => {
+    for (let j = 0; j < pressures; j += 1) {
+      z[j].set(r[j]);
+      solve(factors.mass, z[j], n);
+    }
+    q.set(r[0]);
+    for (let v = 0; v < corners; v += 1)
+      if (factors.onFace[v]) for (let c = 0; c < n; c += 1) q[c * corners + v] = 0;
+    solve(factors.laplacian, q, n);
+    axpy(factors.shallow, q, z[0]);
+  };
+
+  for (let k = 0; k < N; k += 1) {
+    for (let c = 0; c < n; c += 1) {
+      const from = 2 * c * count;
+      for (let i = 0; i < 2 * count; i += 1) u[k][from + i] = depth.coupling[k] * loads[c][i];
+    }
+    solve(factors.inPlane[k], u[k], 2 * n);
+  }
+  conserve(u, w, -1, r);
+  precondition();
+  for (let j = 0; j < pressures; j += 1) d[j].set(z[j]);
+  const rz = dots(r, z, n);
+  const first = rz.slice();
+  const alpha = new Float64Array(n);
+  const beta = new Float64Array(n);
+  const worst = (): number => {
+    let most = 0;
+    for (let c = 0; c < n; c += 1) if (first[c] > 0) most = Math.max(most, rz[c] / first[c]);
+    return Math.sqrt(most);
+  };
+  let iterations = 0;
+  while (worst() > tolerance && iterations < mostIterations) {
+    iterations += 1;
+    for (let k = 0; k < N; k += 1) {
+      q.fill(0);
+      for (let j = 0; j < pressures; j += 1) axpy(depth.coupling[j * N + k], d[j], q);
+      gradient(plane, q, n, du[k]);
+      solve(factors.inPlane[k], du[k], 2 * n);
+    }
+    for (let m = 0; m < across; m += 1) {
+      q.fill(0);
+      for (let j = 1; j < pressures; j += 1) axpy(depth.acrossCoupling[j * across + m] / halfDepth, d[j], q);
+      spread(plane, q, n, dw[m]);
+      solve(factors.across[m], dw[m], n);
+    }
+    conserve(du, dw, 1, s);
+    const ds = dots(d, s, n);
+    for (let c = 0; c < n; c += 1) alpha[c] = ds[c] > 0 ? rz[c] / ds[c] : 0;
+    for (let j = 0; j < pressures; j += 1) {
+      addEach(alpha, 1, d[j], p[j]);
+      addEach(alpha, -1, s[j], r[j]);
+    }
+    for (let k = 0; k < N; k += 1) addEach(alpha, 1, du[k], u[k]);
+    for (let m = 0; m < across; m += 1) addEach(alpha, 1, dw[m], w[m]);
+    precondition();
+    const next = dots(r, z, n);
+    for (let c = 0; c < n; c += 1) beta[c] = rz[c] > 0 ? next[c] / rz[c] : 0;
+    rz.set(next);
+    for (let j = 0; j < pressures; j += 1) turn(z[j], beta, d[j]);
+  }
+  return { patterns: n, inPlane: u, across: w, pressure: p, iterations, residual: worst() };
+}
+
+/** y += a x */
+function axpy(a: number, x: Float64Array, y: Float64Array): void {
+  for (let i = 0; i < x.length; i += 1) y[i] += a * x[i];
+}
+
+/** y += sign a_c x on each of the patterns c, which lie one after the other. */
+function addEach(a: Float64Array, sign: number, x: Float64Array, y: Float64Array): void {
+  const size = x.length / a.length;
+  for (let c = 0; c < a.length; c += 1) {
+    const factor = sign * a[c];
+    for (let i = c * size; i < (c + 1) * size; i += 1) y[i] += factor * x[i];
+  }
+}
+
+/** d = z + b_c d on each of the patterns. */
+function turn(z: Float64Array, b: Float64Array, d: Float64Array): void {
+  const size = z.length / b.length;
+  for (let c = 0; c < b.length; c += 1) {
+    const factor = b[c];
+    for (let i = c * size; i < (c + 1) * size; i += 1) d[i] = z[i] + factor * d[i];
+  }
+}
+
+/** Dot product of each pattern over all modes. */
+function dots(a: readonly Float64Array[], b: readonly Float64Array[], n: number): Float64Array {
+  const out = new Float64Array(n);
+  for (let j = 0; j < a.length; j += 1) {
+    const x = a[j];
+    const y = b[j];
+    const size = x.length / n;
+    for (let c = 0; c < n; c += 1) {
+      let sum = 0;
+      for (let i = c * size; i < (c + 1) * size; i += 1) sum += x[i] * y[i];
+      out[c] += sum;
+    }
+  }
+  return out;
+}
