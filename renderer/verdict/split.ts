@@ -1,0 +1,104 @@
+import type { TargetResult } from '../../solver/chip/result.ts';
+import type { Ref } from '../state/ref.ts';
+import { count, counted, figure } from '../words/figure.ts';
+import { type Answer, type Evidence, type Margin, type Run, strong, unsolved } from './answer.ts';
+
+const QUESTION = 'Does it split right?';
+
+const nameOf = (target: TargetResult): string => target.port ?? target.channel ?? '';
+const refOf = (target: TargetResult): Ref =>
+  target.port !== undefined ? `port:${target.port}` : `channel:${target.channel}`;
+const offOf = (target: TargetResult): number =>
+  target.got === null ? Number.NaN : target.got / target.wanted - 1;
+const percent = (share: number, signed = false): string =>
+  figure(share, 'share', { digits: 2, unit: '%', signed });
+
+/** The targets against what they get. */
+export function splitAnswer(evidence: Evidence): Answer {
+  const { result, chip } = evidence;
+  if (!result) return unsolved(QUESTION, evidence);
+  const { targets } = result;
+  const [only] = targets;
+  if (!only)
+    return {
+      question: QUESTION,
+      standing: 'not asked',
+      says: ['No target is given.'],
+      margin: null,
+      culprit: null,
+    };
+  const within = (target: TargetResult): number => toleranceOf(evidence, target);
+  const strain = (target: TargetResult): number => Math.abs(offOf(target)) / within(target);
+  const known = targets.filter((target) => target.got !== null);
+  const worst = known.length > 0 ? known.reduce((a, b) => (strain(b) > strain(a) ? b : a)) : null;
+  const margin = worst && dots(known, worst, Math.max(...targets.map(within)));
+  const answer = (standing: Answer['standing'], culprit: TargetResult, says: readonly Run[]): Answer => ({
+    question: QUESTION,
+    standing,
+    says,
+    margin,
+    culprit: refOf(culprit),
+  });
+
+  const missed = known.filter((target) => !target.met);
+  if (worst && missed.length > 0) {
+    const others = missed.length - 1;
+    const tail = others === 0 ? '.' : `; ${counted(others, 'more misses', 'more miss')} as well.`;
+    return answer('no', worst, [
+      `No: ${nameOf(worst)} is `,
+      strong(percent(offOf(worst), true)),
+      ` off, ${percent(within(worst))} is allowed${tail}`,
+    ]);
+  }
+  const lost = targets.find((target) => target.got === null);
+  if (lost || !worst)
+    return answer('unknown', lost ?? only, [
+      `Not known: the flow at ${nameOf(lost ?? only)} is too small to be resolved.`,
+    ]);
+  const off = strong(percent(Math.abs(offOf(worst))));
+  if (targets.length === 1)
+    return answer('yes', worst, [`Yes: ${nameOf(worst)} is within `, off, ' of its target.']);
+  const all = targets.length === 2 ? 'Both' : `All ${count(targets.length)}`;
+  const wish = chip.targets.every((target) => 'share' in target) ? 'share' : 'target';
+  return answer('yes', worst, [
+    `${all} ${noun(targets)} within `,
+    off,
+    ` of their ${wish}; the worst is ${nameOf(worst)}.`,
+  ]);
+}
+
+/** "wells" where all names are one word and a number, else "outlets" or "targets". */
+function noun(targets: readonly TargetResult[]): string {
+  const stems = new Set(targets.map((target) => /^(\p{L}{2,12})[\s_-]*\d+$/u.exec(nameOf(target))?.[1]));
+  const [stem] = stems;
+  if (stems.size === 1 && stem) return `${stem}s`;
+  return targets.every((target) => target.port !== undefined) ? 'outlets' : 'targets';
+}
+
+function toleranceOf({ chip }: Evidence, target: TargetResult): number {
+  const found = chip.targets.find((wish) =>
+    'port' in wish ? wish.port === target.port : wish.channel === target.channel,
+  );
+  return found && found.within > 0 ? found.within : 1e-6;
+}
+
+const MOST_DOTS = 60;
+
+function dots(known: readonly TargetResult[], worst: TargetResult, tolerance: number): Margin {
+  const furthest = Math.max(...known.map((target) => Math.abs(offOf(target))));
+  // the track ends at the tolerance, or beyond the furthest dot where one lies outside
+  const end = furthest > tolerance ? furthest * 1.08 : tolerance;
+  const thin = Math.ceil(known.length / MOST_DOTS);
+  const shown = known.filter((target, i) => i % thin === 0 && target !== worst);
+  const label = percent(end);
+  return {
+    kind: 'dots',
+    dots: [...shown, worst].map((target) => ({
+      at: 0.5 + (0.5 * offOf(target)) / end,
+      worst: target === worst,
+      out: !target.met,
+    })),
+    allowed: tolerance / end,
+    ends: [`−${label}`, `+${label}`],
+  };
+}

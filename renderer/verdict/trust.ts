@@ -1,0 +1,86 @@
+import type { Result } from '../../solver/chip/result.ts';
+import { counted, figure, number } from '../words/figure.ts';
+import { type Answer, type Evidence, placeRef, type Run, strong, unsolved } from './answer.ts';
+import { BUILD_KINDS } from './finding-kinds.ts';
+
+const QUESTION = 'Can I trust it?';
+
+/** Relative error that the solver states for its worst part. */
+export function statedError(result: Result): number {
+  let worst = 0;
+  for (const cell of result.cells) worst = Math.max(worst, cell.accuracy);
+  for (const channel of result.channels)
+    for (const piece of channel.pieces) worst = Math.max(worst, piece.accuracy ?? 0);
+  return worst;
+}
+
+export function highestReynolds(result: Result): { readonly value: number; readonly where: string } | null {
+  let best: { value: number; where: string } | null = null;
+  for (const channel of result.channels)
+    for (const [i, piece] of channel.pieces.entries())
+      if (piece.reynolds !== null && (!best || piece.reynolds > best.value))
+        best = { value: piece.reynolds, where: `${channel.id}#${i + 1}` };
+  return best;
+}
+
+/** The stated error, what is still taken as ideal, and the Reynolds number that creeping flow rests on. */
+export function trustAnswer(evidence: Evidence): Answer {
+  const { result, chip } = evidence;
+  if (!result) return unsolved(QUESTION, evidence);
+  const error = statedError(result);
+  const reynolds = highestReynolds(result);
+  const doubts = result.findings.filter(
+    (finding) => finding.severity !== 'note' && !BUILD_KINDS.has(finding.kind),
+  );
+  const flow: Run = reynolds
+    ? `Re at most ${number(reynolds.value, reynolds.value < 0.1 ? 1 : 2)}.`
+    : 'nothing flows.';
+  const culprit = doubts[0] ? placeRef(doubts[0].where, chip) : reynolds && placeRef(reynolds.where, chip);
+  const solved = result.cells.length;
+  const [first] = doubts;
+  if (first)
+    return {
+      question: QUESTION,
+      standing: 'unknown',
+      says: [
+        first.severity === 'stop' ? 'Not yet: ' : 'With care: ',
+        first.says.replace(/\.$/, ''),
+        doubts.length > 1 ? `, and ${counted(doubts.length - 1, 'more doubt')}.` : '.',
+      ],
+      margin: error > 0 ? band(error) : null,
+      culprit,
+    };
+  if (result.junctions !== 'solved')
+    return {
+      question: QUESTION,
+      standing: 'unknown',
+      says: [
+        result.junctions === 'ideal'
+          ? 'Roughly: junctions are taken as ideal'
+          : 'Nearly: some junctions are still ideal',
+        solved > 0 ? `, ${counted(solved, 'junction')} solved; ` : '; ',
+        flow,
+      ],
+      margin: null,
+      culprit,
+    };
+  return {
+    question: QUESTION,
+    standing: 'yes',
+    says: [
+      'Within ',
+      strong(figure(error, 'share', { digits: 2, unit: '%' })),
+      solved > 0 ? `: ${counted(solved, 'junction')} solved, ` : ': ',
+      flow,
+    ],
+    margin: band(error),
+    culprit,
+  };
+}
+
+const band = (error: number) =>
+  ({
+    kind: 'band',
+    half: Math.min(1, Math.max(0.04, error / 0.02)),
+    label: figure(error, 'share', { digits: 2, unit: '%' }),
+  }) as const;

@@ -1,0 +1,236 @@
+import { describe, expect, test } from 'vitest';
+import type { Chip, Limit, Target } from '../../solver/chip/chip.ts';
+import type { CellResult, Result } from '../../solver/chip/result.ts';
+import { emptyChip, teeChip } from '../testing/chips.ts';
+import { piece, resultOf, target } from '../testing/results.ts';
+import { type Answer, placeName, placeRef, plainText } from './answer.ts';
+import { verdicts } from './verdicts.ts';
+
+const ORDER = { split: 0, cells: 1, pump: 2, made: 3, trust: 4 } as const;
+const ask = (which: keyof typeof ORDER, chip: Chip, result: Result | null, trouble = ''): Answer =>
+  verdicts({ chip, result, trouble })[ORDER[which]]!;
+const text = (answer: Answer): string => plainText(answer.says).replaceAll('\u202f', ' ');
+
+const wish = (port: string, share: number, within = 0.02): Target => ({ port, share, within });
+const withTargets = (...targets: Target[]): Chip => ({ ...teeChip(), targets });
+const withLimits = (...limits: Limit[]): Chip => ({ ...teeChip(), limits });
+
+describe('Does it split right?', () => {
+  test('not asked is not yes', () => {
+    const answer = ask('split', teeChip(), resultOf());
+    expect(answer.standing).toBe('not asked');
+    expect(text(answer)).toBe('No target is given.');
+  });
+  test('one', () => {
+    const answer = ask(
+      'split',
+      withTargets(wish('well 1', 0.5)),
+      resultOf({ targets: [target('well 1', 0.5, 0.504, true)] }),
+    );
+    expect(answer).toMatchObject({ standing: 'yes', culprit: 'port:well 1' });
+    expect(text(answer)).toBe('Yes: well 1 is within 0.80 % of its target.');
+  });
+  test('two and eight, by their own noun', () => {
+    const many = (n: number) => Array.from({ length: n }, (_, i) => i + 1);
+    for (const [n, words] of [
+      [2, 'Both wells'],
+      [8, 'All eight wells'],
+    ] as const) {
+      const chip = withTargets(...many(n).map((i) => wish(`well ${i}`, 1 / n)));
+      const targets = many(n).map((i) =>
+        target(`well ${i}`, 1 / n, (1 / n) * (i === 2 ? 0.986 : 1.001), true),
+      );
+      expect(text(ask('split', chip, resultOf({ targets })))).toBe(
+        `${words} within 1.4 % of their share; the worst is well 2.`,
+      );
+    }
+  });
+  test('mixed names are outlets; two hundred are counted in figures', () => {
+    const names = Array.from({ length: 200 }, (_, i) => `${i % 2 ? 'a' : 'bb'}${i}`);
+    const chip = withTargets(...names.map((name) => wish(name, 0.005)));
+    const answer = ask(
+      'split',
+      chip,
+      resultOf({ targets: names.map((name) => target(name, 0.005, 0.005, true)) }),
+    );
+    expect(text(answer)).toBe(
+      'All 200 outlets within 0 % of their share; the worst is a1.'.replace('a1', 'bb0'),
+    );
+    expect(answer.margin).toMatchObject({ kind: 'dots' });
+    if (answer.margin?.kind === 'dots') expect(answer.margin.dots.length).toBeLessThanOrEqual(61);
+  });
+  test('missed, alone and with others', () => {
+    const chip = withTargets(wish('well 1', 0.5), wish('well 2', 0.5), wish('in', 1));
+    const one = [
+      target('well 1', 0.5, 0.45, false),
+      target('well 2', 0.5, 0.505, true),
+      target('in', 1, 1, true),
+    ];
+    const answer = ask('split', chip, resultOf({ targets: one }));
+    expect(answer).toMatchObject({ standing: 'no', culprit: 'port:well 1' });
+    expect(text(answer)).toBe('No: well 1 is −10 % off, 2.0 % is allowed.');
+    const two = [one[0]!, target('well 2', 0.5, 0.55, false), target('in', 1, 0.9, false)];
+    expect(text(ask('split', chip, resultOf({ targets: two })))).toContain('two more miss as well.');
+    expect(text(ask('split', chip, resultOf({ targets: two.slice(0, 2) })))).toContain(
+      'one more misses as well.',
+    );
+  });
+  test('unresolved flow is not known', () => {
+    const answer = ask(
+      'split',
+      withTargets(wish('well 1', 0.5)),
+      resultOf({ targets: [target('well 1', 0.5, null, false)] }),
+    );
+    expect(answer.standing).toBe('unknown');
+    expect(text(answer)).toBe('Not known: the flow at well 1 is too small to be resolved.');
+  });
+  test('unsolved says why, empty says so', () => {
+    expect(text(ask('split', teeChip(), null, 'well 2 has no drive.'))).toBe(
+      'Not known: well 2 has no drive.',
+    );
+    expect(text(ask('split', teeChip(), null))).toBe('Not solved yet.');
+    expect(text(ask('split', emptyChip(), null))).toBe('Nothing is drawn yet.');
+  });
+});
+
+describe('Do the cells survive?', () => {
+  const bear: Limit = { name: 'suspended cells', shear: 1.5 };
+  test('no limit is not yes', () => {
+    const answer = ask('cells', teeChip(), resultOf());
+    expect(answer).toMatchObject({ standing: 'not asked', culprit: 'channel:feed' });
+    expect(text(answer)).toBe(
+      'No limit is given; the highest wall shear is 0.800 Pa, in feed.'.replace('0.800', '0.800'),
+    );
+  });
+  test('no limit and nothing known', () => {
+    const still = resultOf({ channels: [{ id: 'feed', pieces: [piece({ peakWallShear: null })] }] });
+    expect(text(ask('cells', teeChip(), still))).toBe('No limit is given.');
+  });
+  test('yes', () => {
+    const answer = ask(
+      'cells',
+      withLimits(bear),
+      resultOf({ limits: [{ name: 'suspended cells', limit: 1.5, worst: 0.8, where: 'feed#1', met: true }] }),
+    );
+    expect(answer).toMatchObject({
+      standing: 'yes',
+      culprit: 'channel:feed',
+      margin: { kind: 'bar', over: false },
+    });
+    expect(text(answer)).toBe('Yes: at most 0.800 Pa in feed; suspended cells bear 1.50 Pa.');
+  });
+  test('no, alone and with another', () => {
+    const limits = [{ name: 'suspended cells', limit: 1.5, worst: 1.83, where: 'junction:3', met: false }];
+    const answer = ask('cells', withLimits(bear), resultOf({ limits }));
+    expect(answer).toMatchObject({
+      standing: 'no',
+      culprit: 'junction:3',
+      margin: { kind: 'bar', over: true },
+    });
+    expect(text(answer)).toBe('No: 1.83 Pa in junction 3; suspended cells: at most 1.50 Pa.');
+    const two = withLimits(bear, { name: 'platelets', shear: 1 });
+    const both = [...limits, { name: 'platelets', limit: 1, worst: 1.83, where: 'junction:3', met: false }];
+    expect(text(ask('cells', two, resultOf({ limits: both })))).toBe(
+      'No: 1.83 Pa in junction 3; platelets: at most 1.00 Pa, and one more limit missed.',
+    );
+  });
+  test('a limit that could not be judged is not known', () => {
+    const answer = ask(
+      'cells',
+      withLimits(bear),
+      resultOf({
+        limits: [{ name: 'suspended cells', limit: 1.5, worst: null, where: 'junction:2', met: null }],
+      }),
+    );
+    expect(answer.standing).toBe('unknown');
+    expect(text(answer)).toBe('Not known: suspended cells could not be judged in junction 2.');
+    expect(ask('cells', withLimits(bear), resultOf()).standing).toBe('unknown');
+  });
+});
+
+describe('Can the pump drive it?', () => {
+  test('no pump given is not yes', () => {
+    const answer = ask('pump', teeChip(), resultOf());
+    expect(answer).toMatchObject({ standing: 'not asked', culprit: 'port:in' });
+    expect(text(answer)).toBe('It needs 31.2 kPa at in; no pump is given.');
+  });
+  test('sucking is said', () => {
+    const ports = [
+      { id: 'in', pressure: 0, flow: 1, share: 1 },
+      { id: 'well 1', pressure: -2000, flow: -1, share: 1 },
+    ];
+    expect(text(ask('pump', teeChip(), resultOf({ ports })))).toBe(
+      'It needs 2.00 kPa from in to well 1, which sucks; no pump is given.',
+    );
+  });
+  test('nothing drives', () =>
+    expect(ask('pump', { ...teeChip(), ports: [] }, resultOf()).standing).toBe('unknown'));
+});
+
+describe('Can it be made?', () => {
+  test('without a process the narrowest feature is named, and it is no yes', () => {
+    const answer = ask('made', teeChip(), resultOf());
+    expect(answer).toMatchObject({ standing: 'not asked', culprit: 'channel:up' });
+    expect(text(answer)).toBe('The narrowest channel is 120 µm, up; what the process holds is not given.');
+  });
+  test('nothing drawn', () => expect(text(ask('made', emptyChip(), null))).toBe('Nothing is drawn yet.'));
+});
+
+describe('Can I trust it?', () => {
+  const cell: CellResult = {
+    id: 'junction:1',
+    kind: 'junction',
+    at: [0.02, 0.013],
+    faces: [],
+    portMatrix: [],
+    peakWallShear: 1,
+    peakAt: null,
+    accuracy: 0.004,
+  };
+  test('solved, with the band', () => {
+    const answer = ask('trust', teeChip(), resultOf({ cells: [cell] }));
+    expect(answer).toMatchObject({ standing: 'yes', margin: { kind: 'band' } });
+    expect(text(answer)).toBe('Within 0.40 %: one junction solved, Re at most 1.2.');
+  });
+  test('ideal junctions are said', () => {
+    const answer = ask('trust', teeChip(), resultOf({ junctions: 'ideal' }));
+    expect(answer.standing).toBe('unknown');
+    expect(text(answer)).toBe('Roughly: junctions are taken as ideal; Re at most 1.2.');
+    expect(text(ask('trust', teeChip(), resultOf({ junctions: 'mixed', cells: [cell] })))).toBe(
+      'Nearly: some junctions are still ideal, one junction solved; Re at most 1.2.',
+    );
+  });
+  test('nothing flows', () => {
+    const still = resultOf({
+      junctions: 'ideal',
+      channels: [{ id: 'feed', pieces: [piece({ reynolds: null })] }],
+    });
+    expect(text(ask('trust', teeChip(), still))).toContain('nothing flows.');
+  });
+  test('a doubt is told first', () => {
+    const doubt = {
+      kind: 'inertia',
+      severity: 'warn',
+      where: 'feed#1',
+      says: 'Re is 80 in feed.',
+      do: 'Slow the flow.',
+    } as const;
+    const answer = ask('trust', teeChip(), resultOf({ findings: [doubt, doubt] }));
+    expect(answer).toMatchObject({ standing: 'unknown', culprit: 'channel:feed' });
+    expect(text(answer)).toBe('With care: Re is 80 in feed, and one more doubt.');
+  });
+});
+
+test('places by name and reference', () => {
+  expect(['', 'port:in', 'junction:3', 'feed#2', 'chamber:well'].map(placeName)).toEqual([
+    'the chip',
+    'in',
+    'junction 3',
+    'feed',
+    'well',
+  ]);
+  expect(placeRef('feed#2', teeChip())).toBe('channel:feed');
+  expect(placeRef('in', teeChip())).toBe('port:in');
+  expect(placeRef('', teeChip())).toBeNull();
+  expect(placeRef('nobody', teeChip())).toBeNull();
+});
