@@ -1,10 +1,10 @@
 /**
  * C ← C − X Yᵀ, the update of a block of L by one before it.
  *
- * X are the rows `first` … `height`−1 of the earlier panel, Y its rows `first` … `last`−1, which are the ones
- * that fall on columns of the later block. The product goes straight to its place in the later panel, in
- * tiles of 4 × 2. Where a tile pokes above the diagonal of the later block it writes there too: nothing
- * reads that part.
+ * X are the rows `first` … `height`−1 of the earlier panel, Y its rows `first` … `last`−1, the ones that fall
+ * on columns of the later block. The product goes straight to its place in the later panel, in tiles of
+ * 3 × 2 (what the registers of scalar code hold). A tile that pokes above the diagonal of the later block
+ * writes there too: nothing reads that part.
  *
  * @param panels all panels
  * @param from start of the earlier panel, `width` wide
@@ -29,19 +29,16 @@ export function blockUpdate(
     const y0 = from + j * width;
     const y1 = y0 + width;
     let i = j;
-    for (; i + 3 < height; i += 4) {
+    for (; i + 2 < height; i += 3) {
       const x0 = from + i * width;
       const x1 = x0 + width;
       const x2 = x1 + width;
-      const x3 = x2 + width;
       let s00 = 0;
       let s01 = 0;
       let s10 = 0;
       let s11 = 0;
       let s20 = 0;
       let s21 = 0;
-      let s30 = 0;
-      let s31 = 0;
       for (let k = 0; k < width; k += 1) {
         const u = panels[y0 + k]!;
         const v = panels[y1 + k]!;
@@ -54,22 +51,16 @@ export function blockUpdate(
         const c = panels[x2 + k]!;
         s20 += c * u;
         s21 += c * v;
-        const d = panels[x3 + k]!;
-        s30 += d * u;
-        s31 += d * v;
       }
       const t0 = place[rows[rowStart + i]!]!;
       const t1 = place[rows[rowStart + i + 1]!]!;
       const t2 = place[rows[rowStart + i + 2]!]!;
-      const t3 = place[rows[rowStart + i + 3]!]!;
       panels[t0 + c0] = panels[t0 + c0]! - s00;
       panels[t0 + c1] = panels[t0 + c1]! - s01;
       panels[t1 + c0] = panels[t1 + c0]! - s10;
       panels[t1 + c1] = panels[t1 + c1]! - s11;
       panels[t2 + c0] = panels[t2 + c0]! - s20;
       panels[t2 + c1] = panels[t2 + c1]! - s21;
-      panels[t3 + c0] = panels[t3 + c0]! - s30;
-      panels[t3 + c1] = panels[t3 + c1]! - s31;
     }
     for (; i < height; i += 1) {
       const x0 = from + i * width;
@@ -85,15 +76,15 @@ export function blockUpdate(
       panels[t0 + c1] = panels[t0 + c1]! - s1;
     }
   }
-  if (j < last) {
-    const c0 = rows[rowStart + j]!;
-    const y0 = from + j * width;
-    for (let i = j; i < height; i += 1) {
-      const x0 = from + i * width;
-      let s0 = 0;
-      for (let k = 0; k < width; k += 1) s0 += panels[x0 + k]! * panels[y0 + k]!;
-      const t0 = place[rows[rowStart + i]!]!;
-      panels[t0 + c0] = panels[t0 + c0]! - s0;
-    }
+  if (j === last) return;
+
+  const c0 = rows[rowStart + j]!;
+  const y0 = from + j * width;
+  for (let i = j; i < height; i += 1) {
+    const x0 = from + i * width;
+    let s0 = 0;
+    for (let k = 0; k < width; k += 1) s0 += panels[x0 + k]! * panels[y0 + k]!;
+    const t0 = place[rows[rowStart + i]!]!;
+    panels[t0 + c0] = panels[t0 + c0]! - s0;
   }
 }

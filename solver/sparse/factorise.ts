@@ -58,15 +58,15 @@ export function factorise(
   matrix: SymmetricMatrix,
   into: Factor = emptyFactor(symbolic),
 ): Factor {
-  const { n, entries, order, blocks, firstColumn, rowStart, rows, panelStart, blockOf, scatter } = symbolic;
+  const { n, order, blocks, firstColumn, rowStart, rows, panelStart, blockOf, scatter } = symbolic;
   const { columnStart, value } = matrix;
-  if (matrix.n !== n || columnStart[n] !== entries)
+  if (matrix.n !== n || columnStart[n] !== scatter.length)
     throw new RangeError('The pattern is not the one analysed.');
   const { panels, workspace } = into;
   const { place, floor, waiting, next, reached } = workspace;
 
   panels.fill(0);
-  for (let p = 0; p < entries; p += 1) panels[scatter[p]!] = value[p]!;
+  for (let p = 0; p < scatter.length; p += 1) panels[scatter[p]!] = value[p]!;
   const slack = Math.max(64, Math.sqrt(n)) * ROUND_OFF;
   for (let k = 0; k < n; k += 1) floor[k] = slack * Math.abs(value[columnStart[order[k]!]!]!);
 

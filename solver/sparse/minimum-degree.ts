@@ -279,7 +279,7 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
       if (s <= 0) continue;
       size[i] = s;
       const bound = degree[i]! + weight - s;
-      const d = bound < remaining - s ? bound : remaining - s;
+      const d = Math.min(bound, remaining - s);
       enlist(i, d);
       graph[to] = i;
       to += 1;

@@ -47,8 +47,8 @@ export function patternOfElements(n: number, elementStart: Int32Array, unknowns:
           low[entry] = -1;
           continue;
         }
-        low[entry] = ua < ub ? ua : ub;
-        const row = ua < ub ? ub : ua;
+        low[entry] = Math.min(ua, ub);
+        const row = Math.max(ua, ub);
         high[entry] = row;
         rowFill[row + 1] = rowFill[row + 1]! + 1;
       }

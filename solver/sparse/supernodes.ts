@@ -1,5 +1,5 @@
 /** Columns of a block at most: beyond it the dense kernels gain nothing and their rows leave the cache. */
-const WIDEST = 64;
+const WIDEST = 48;
 
 /**
  * Blocks of consecutive columns of L with (nearly) the same rows below, so that elimination runs on dense

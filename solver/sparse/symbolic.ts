@@ -8,8 +8,6 @@
  */
 export interface Symbolic {
   readonly n: number;
-  /** Stored values of the matrix it was made for. */
-  readonly entries: number;
   /** order[k] is the unknown eliminated as number k, n. */
   readonly order: Int32Array;
   readonly blocks: number;
@@ -22,7 +20,7 @@ export interface Symbolic {
   readonly panelStart: Int32Array;
   /** Block of each column, n. */
   readonly blockOf: Int32Array;
-  /** Where each stored value of the matrix goes in the panels, entries. */
+  /** Where each stored value of the matrix goes in the panels; as long as the matrix has values. */
   readonly scatter: Int32Array;
   /** Column counts of L summed, diagonal included, without the zeros that blocks take in. */
   readonly factorEntries: number;
