@@ -1,0 +1,35 @@
+import { PALETTES, type Palette, type Scheme } from './tokens.ts';
+
+/** What the person chose: the system's own light or dark, or one of them always. */
+export type SchemeChoice = 'system' | Scheme;
+
+const dark = typeof matchMedia === 'function' ? matchMedia('(prefers-color-scheme: dark)') : null;
+let choice: SchemeChoice = 'system';
+const listeners = new Set<() => void>();
+
+export const scheme = (): Scheme => (choice === 'system' ? (dark?.matches ? 'dark' : 'light') : choice);
+export const palette = (): Palette => PALETTES[scheme()];
+
+function apply(): void {
+  const root = document.documentElement;
+  for (const [name, colour] of Object.entries(palette())) root.style.setProperty(`--${name}`, colour);
+  root.style.setProperty('color-scheme', scheme());
+  for (const listener of listeners) listener();
+}
+
+/** Puts the palette on the page and keeps it in step with the system. */
+export function startTheme(): void {
+  dark?.addEventListener('change', apply);
+  apply();
+}
+
+export function chooseScheme(next: SchemeChoice): void {
+  choice = next;
+  apply();
+}
+
+/** Calls `listener` after every change; returns how to stop. */
+export function onTheme(listener: () => void): () => void {
+  listeners.add(listener);
+  return () => listeners.delete(listener);
+}
