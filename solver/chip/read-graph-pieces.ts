@@ -1,0 +1,150 @@
+import type { Finding } from '../problem/finding.ts';
+import { um } from './geometry/centreline.ts';
+import { curve, pointAt } from './geometry/curve.ts';
+import { TOUCH } from './geometry/tolerance.ts';
+import type { Piece } from './graph.ts';
+import type { Drawing } from './read-graph-drawing.ts';
+import type { Links } from './read-graph-links.ts';
+import type { Hold } from './read-graph-sites.ts';
+
+/** The stretches of a channel between its sites. */
+export function readPieces(
+  drawing: Drawing,
+  links: Links,
+  channel: number,
+  holds: readonly Hold[],
+  pieces: Piece[],
+): void {
+  const spec = drawing.chip.channels[channel]!;
+  const { length: total } = drawing.lines[channel]!;
+  const slope = (spec.width[1] - spec.width[0]) / total;
+  const width = (s: number) => spec.width[0] + slope * Math.min(Math.max(s, 0), total);
+  let number = 0;
+  for (let k = 1; k < holds.length; k++) {
+    const a = holds[k - 1]!;
+    const b = holds[k]!;
+    const length = b.low - a.high;
+    if (length <= TOUCH) continue;
+    number++;
+    pieces.push({
+      channel: spec.id,
+      channelIndex: channel,
+      number,
+      from: a.site,
+      to: b.site,
+      layer: spec.layer,
+      layerIndex: drawing.layerOf[channel]!,
+      path: pathBetween(drawing, links, channel, a.coreHigh, b.coreLow),
+      start: a.coreHigh,
+      stop: b.coreLow,
+      length,
+      trim: [a.high - a.coreHigh, b.coreLow - b.low],
+      width: [width(a.high), width(b.low)],
+    });
+  }
+}
+
+/**
+ * Where two channels run on the same line, the fluid sees one: of two pieces between the same sites
+ * whose middles coincide, the wider stays (the earlier, if equal).
+ */
+export function dropDoubles(pieces: readonly Piece[], findings: Finding[]): Piece[] {
+  const bySites = new Map<string, Piece[]>();
+  for (const p of pieces) {
+    const key = p.from < p.to ? `${p.from} ${p.to}` : `${p.to} ${p.from}`;
+    const list = bySites.get(key);
+    if (list) list.push(p);
+    else bySites.set(key, [p]);
+  }
+  const dropped = new Set<Piece>();
+  for (const list of bySites.values()) {
+    for (let i = 1; i < list.length; i++) {
+      for (let j = 0; j < i; j++) {
+        const p = list[j]!;
+        const q = list[i]!;
+        if (dropped.has(p) || dropped.has(q) || !coincide(p, q)) continue;
+        const [keep, drop] = q.width[0] + q.width[1] > p.width[0] + p.width[1] ? [q, p] : [p, q];
+        dropped.add(drop);
+        const { x, y } = drop.path[0]!;
+        findings.push({
+          kind: 'same-line',
+          severity: 'warn',
+          where: drop.channel,
+          says: `${drop.channel} runs on the same line as ${keep.channel} over ${um(drop.length)}; the fluid sees one channel there, counted as ${keep.channel}.`,
+          do: `Take that stretch out of ${drop.channel}.`,
+          at: [x * 1e-9, y * 1e-9],
+        });
+      }
+    }
+  }
+  return dropped.size === 0 ? [...pieces] : renumber(pieces.filter((p) => !dropped.has(p)));
+}
+
+function coincide(p: Piece, q: Piece): boolean {
+  if (Math.abs(p.length - q.length) > 2 * TOUCH) return false;
+  const [px, py] = middle(p);
+  const [qx, qy] = middle(q);
+  return Math.hypot(px - qx, py - qy) <= 2 * TOUCH;
+}
+
+function middle(p: Piece): [number, number] {
+  let left = (p.stop - p.start) / 2;
+  for (let i = 1; i < p.path.length; i++) {
+    const a = p.path[i - 1]!;
+    const b = p.path[i]!;
+    const c = curve(a.x, a.y, b.x, b.y, a.bulge);
+    if (left <= c.length) return pointAt(c, left);
+    left -= c.length;
+  }
+  const last = p.path[p.path.length - 1]!;
+  return [last.x, last.y];
+}
+
+function renumber(pieces: readonly Piece[]): Piece[] {
+  let channel = -1;
+  let number = 0;
+  return pieces.map((p) => {
+    number = p.channelIndex === channel ? number + 1 : 1;
+    channel = p.channelIndex;
+    return p.number === number ? p : { ...p, number };
+  });
+}
+
+interface Vertex {
+  x: number;
+  y: number;
+  bulge: number;
+}
+
+/** Centreline of a channel between two distances along it, the added ends included. */
+export function pathBetween(
+  drawing: Drawing,
+  links: Links,
+  channel: number,
+  from: number,
+  to: number,
+): readonly Vertex[] {
+  const { elements, length } = drawing.lines[channel]!;
+  const path: Vertex[] = [];
+  if (from < 0) {
+    const { x, y } = links.head.get(channel)!;
+    path.push({ x, y, bulge: 0 });
+  }
+  let end: [number, number] | undefined;
+  for (const e of elements) {
+    const low = Math.max(from, e.s0);
+    const high = Math.min(to, e.s1);
+    if (high <= low) continue;
+    const c = e.curve;
+    const [x, y] = low === e.s0 ? [c.x0, c.y0] : pointAt(c, low - e.s0);
+    const whole = low === e.s0 && high === e.s1;
+    path.push({ x, y, bulge: c.bulge === 0 || whole ? c.bulge : Math.tan((c.curvature * (high - low)) / 4) });
+    end = high === e.s1 ? [c.x1, c.y1] : pointAt(c, high - e.s0);
+  }
+  if (end) path.push({ x: end[0], y: end[1], bulge: 0 });
+  if (to > length) {
+    const { x, y } = links.tail.get(channel)!;
+    path.push({ x, y, bulge: 0 });
+  }
+  return path;
+}

@@ -1,0 +1,256 @@
+import type { Chip, Point } from './chip.ts';
+import { centroid } from './geometry/area.ts';
+import { covers } from './geometry/body.ts';
+import { TOUCH } from './geometry/tolerance.ts';
+import type { SiteKind } from './graph.ts';
+import type { Places } from './read-graph-areas.ts';
+import type { Drawing } from './read-graph-drawing.ts';
+import type { Links } from './read-graph-links.ts';
+
+/** A stretch of one channel that belongs to one site. */
+export interface Hold {
+  readonly site: number;
+  low: number;
+  high: number;
+  coreLow: number;
+  coreHigh: number;
+}
+
+export interface SiteDraft {
+  readonly name: string;
+  readonly kind: SiteKind;
+  readonly at: Point;
+  readonly layers: Set<string>;
+  readonly chambers: string[];
+  readonly ports: string[];
+  readonly vias: string[];
+}
+
+/** Marks of each channel in order of distance: `order` lists mark numbers, channel c from start[c] to start[c+1]. */
+interface Ordered {
+  readonly start: Int32Array;
+  readonly order: Int32Array;
+}
+
+function orderMarks(links: Links, channels: number): Ordered {
+  const count = links.node.length;
+  const start = new Int32Array(channels + 1);
+  for (let m = 0; m < count; m++) start[links.channel[m]! + 1]!++;
+  for (let c = 0; c < channels; c++) start[c + 1]! += start[c]!;
+  const order = new Int32Array(count);
+  const fill = start.slice();
+  for (let m = 0; m < count; m++) order[fill[links.channel[m]!]!++] = m;
+  const { low, high } = links;
+  for (let c = 0; c < channels; c++) {
+    const from = start[c]!;
+    const to = start[c + 1]!;
+    if (to - from > 1) {
+      order.subarray(from, to).sort((p, q) => low[p]! - low[q]! || high[p]! - high[q]! || p - q);
+    }
+  }
+  return { start, order };
+}
+
+/**
+ * Whether two neighbouring marks of a channel are one place: closer than the tolerance, or, where the
+ * channel goes on through both, closer than half the narrowest channel there, so that the mouths
+ * overlap (several crossings at one place).
+ */
+function onePlace(links: Links, length: number, a: number, b: number, gap: number): boolean {
+  if (gap <= TOUCH) return true;
+  if (links.low[a]! <= TOUCH || links.high[b]! >= length - TOUCH) return false;
+  return gap <= Math.min(links.slim[links.root(links.node[a]!)]!, links.slim[links.root(links.node[b]!)]!);
+}
+
+/** Unites nodes that are one place on some channel, then numbers the sites in drawing order. */
+export function readSites(
+  drawing: Drawing,
+  links: Links,
+  places: Places,
+): { drafts: SiteDraft[]; holds: Hold[][]; portSite: Int32Array } {
+  const { chip, lines } = drawing;
+  const channels = chip.channels.length;
+  const { start, order } = orderMarks(links, channels);
+  for (let c = 0; c < channels; c++) {
+    let reach = start[c]!;
+    for (let k = start[c]! + 1; k < start[c + 1]!; k++) {
+      const a = order[reach]!;
+      const b = order[k]!;
+      if (onePlace(links, lines[c]!.length, a, b, links.low[b]! - links.high[a]!)) {
+        links.unite(links.node[a]!, links.node[b]!);
+      }
+      if (links.high[b]! > links.high[a]!) reach = k;
+    }
+  }
+  const labels = new Labels(chip, links, places);
+  const holds: Hold[][] = [];
+  for (let c = 0; c < channels; c++) {
+    const { length } = lines[c]!;
+    const list: Hold[] = [];
+    const from = links.head.has(c) ? -links.head.get(c)!.length : 0;
+    const to = length + (links.tail.get(c)?.length ?? 0);
+    if (start[c] === start[c + 1]) list.push(labels.endHold(drawing, c, false));
+    for (let k = start[c]!; k < start[c + 1]!; k++) {
+      const m = order[k]!;
+      const root = links.root(links.node[m]!);
+      const site = labels.site(root, chip.channels[c]!.layer);
+      const last = list[list.length - 1];
+      const gap = last ? links.low[m]! - last.high : Infinity;
+      if (last && last.site === site && gap <= Math.max(TOUCH, links.slim[root]!)) {
+        last.high = Math.max(last.high, links.high[m]!);
+        last.coreLow = Math.min(last.coreLow, links.coreLow[m]!);
+        last.coreHigh = Math.max(last.coreHigh, links.coreHigh[m]!);
+        continue;
+      }
+      const hold = {
+        site,
+        low: links.low[m]!,
+        high: links.high[m]!,
+        coreLow: links.coreLow[m]!,
+        coreHigh: links.coreHigh[m]!,
+      };
+      if (!last && hold.low > from + TOUCH && !stub(drawing, links, order, start, c, root, from, hold.low)) {
+        list.push(labels.endHold(drawing, c, false));
+      }
+      list.push(hold);
+    }
+    const last = list[list.length - 1]!;
+    const lastMark = start[c + 1]! - 1;
+    const root = lastMark >= start[c]! ? links.root(links.node[order[lastMark]!]!) : -1;
+    if (last.high < to - TOUCH && (root < 0 || !stub(drawing, links, order, start, c, root, to, last.high))) {
+      list.push(labels.endHold(drawing, c, true));
+    }
+    holds.push(list);
+  }
+  labels.rest();
+  const portSite = Int32Array.from(places.ports, (node) => labels.siteOf.get(links.root(node))!);
+  return { drafts: labels.drafts, holds, portSite };
+}
+
+/** An end that overshoots a crossing but stays within the other channel is no dead end. */
+function stub(
+  drawing: Drawing,
+  links: Links,
+  order: Int32Array,
+  start: Int32Array,
+  channel: number,
+  root: number,
+  end: number,
+  hold: number,
+): boolean {
+  if (Math.abs(end - hold) > 2 * links.stout[root]!) return false;
+  const bodies = drawing.bodies;
+  const e = bodies[end <= hold ? drawing.first[channel]! : drawing.first[channel + 1]! - 1]!.element;
+  const [x, y] = end <= hold ? [e.curve.x0, e.curve.y0] : [e.curve.x1, e.curve.y1];
+  for (const j of drawing.index!.search(x, y, x, y)) {
+    const b = bodies[j]!;
+    const other = b.element.channel;
+    if (other === channel || drawing.layerOf[other] !== drawing.layerOf[channel] || !covers(b, x, y))
+      continue;
+    for (let k = start[other]!; k < start[other + 1]!; k++) {
+      if (links.root(links.node[order[k]!]!) === root) return true;
+    }
+  }
+  return false;
+}
+
+/** Names sites as they are first met, channel by channel. */
+class Labels {
+  readonly drafts: SiteDraft[] = [];
+  readonly siteOf = new Map<number, number>();
+  readonly #links: Links;
+  readonly #chip: Chip;
+  readonly #special = new Map<number, { chambers: number[]; vias: number[]; ports: number[] }>();
+  #junctions = 0;
+  #ends = 0;
+
+  constructor(chip: Chip, links: Links, places: Places) {
+    this.#links = links;
+    this.#chip = chip;
+    for (const kind of ['chambers', 'vias', 'ports'] as const) {
+      places[kind].forEach((node, i) => {
+        const root = links.root(node);
+        const entry = this.#special.get(root) ?? { chambers: [], vias: [], ports: [] };
+        this.#special.set(root, entry);
+        entry[kind].push(i);
+      });
+    }
+  }
+
+  site(root: number, layer: string): number {
+    const known = this.siteOf.get(root);
+    if (known !== undefined) {
+      this.drafts[known]!.layers.add(layer);
+      return known;
+    }
+    const id = this.drafts.length;
+    this.siteOf.set(root, id);
+    const special = this.#special.get(root);
+    if (special) this.drafts.push(this.#place(special));
+    else {
+      const n = this.#links.weight[root]!;
+      this.#junctions++;
+      this.drafts.push({
+        name: `junction:${this.#junctions}`,
+        kind: 'junction',
+        at: [this.#links.x[root]! / n, this.#links.y[root]! / n],
+        layers: new Set(),
+        chambers: [],
+        ports: [],
+        vias: [],
+      });
+    }
+    this.drafts[id]!.layers.add(layer);
+    return id;
+  }
+
+  #place(special: { chambers: number[]; vias: number[]; ports: number[] }): SiteDraft {
+    const chip = this.#chip;
+    const chambers = special.chambers.map((i) => chip.chambers[i]!);
+    const vias = special.vias.map((i) => chip.vias[i]!);
+    const ports = special.ports.map((i) => chip.ports[i]!);
+    const layers = new Set<string>();
+    for (const c of chambers) layers.add(c.layer);
+    for (const v of vias) for (const l of v.layers) layers.add(l);
+    for (const p of ports) layers.add(p.layer);
+    const ids = {
+      layers,
+      chambers: chambers.map((c) => c.id),
+      vias: vias.map((v) => v.id),
+      ports: ports.map((p) => p.id),
+    };
+    if (chambers.length > 0) {
+      const at = centroid(chambers[0]!.outline);
+      return { name: `chamber:${ids.chambers[0]}`, kind: 'chamber', at, ...ids };
+    }
+    if (vias.length > 0) return { name: `via:${ids.vias[0]}`, kind: 'via', at: vias[0]!.at, ...ids };
+    return { name: `port:${ids.ports[0]}`, kind: 'port', at: ports[0]!.at, ...ids };
+  }
+
+  endHold(drawing: Drawing, channel: number, atEnd: boolean): Hold {
+    this.#ends++;
+    const line = drawing.lines[channel]!;
+    const e = line.elements[atEnd ? line.elements.length - 1 : 0]!;
+    const s = atEnd ? line.length : 0;
+    const site = this.drafts.length;
+    this.drafts.push({
+      name: `end:${this.#ends}`,
+      kind: 'end',
+      at: atEnd ? [e.curve.x1, e.curve.y1] : [e.curve.x0, e.curve.y0],
+      layers: new Set([this.#chip.channels[channel]!.layer]),
+      chambers: [],
+      ports: [],
+      vias: [],
+    });
+    return { site, low: s, high: s, coreLow: s, coreHigh: s };
+  }
+
+  /** Places that no channel leads to. */
+  rest(): void {
+    for (const [root, special] of this.#special) {
+      if (this.siteOf.has(root)) continue;
+      this.siteOf.set(root, this.drafts.length);
+      this.drafts.push(this.#place(special));
+    }
+  }
+}
