@@ -1,4 +1,5 @@
 import type { Mesh } from '../mesh/mesh.ts';
+import type { Placement } from './canonical.ts';
 
 /** What is asked of a solve; relative errors. */
 export interface Accuracy {
@@ -25,23 +26,23 @@ export interface CellChecks {
 
 /**
  * Velocity and pressure of each of the first `faces - 1` face patterns (unit pressure on face k,
- * zero on the others; pattern n follows, because equal pressures drive nothing), for viscosity 1.
- * In the unit of the shape that was solved; s = 0 at half depth, s = 1 at floor and lid.
+ * zero on the others; pattern n follows, because equal pressures drive nothing), for viscosity 1 and
+ * depth 1. Coefficients of the depth modes of depth.ts: pattern by pattern, mode by mode, node by node.
+ * To be read through flow-field.ts.
  */
 export interface CellFields {
   readonly mesh: Mesh;
-  readonly halfDepth: number;
-  /** Number of in-plane depth modes N; N - 1 for the velocity across the plan, N for pressure. */
+  /** N: in-plane and pressure modes; N - 1 for the velocity across the plan. */
   readonly modes: number;
-  /** Pattern by pattern, mode by mode, node by node: x, y of the coefficient of (1 - s^2) s^2k. */
+  /** (faces - 1) x N x 2 (all x, then all y) x nodeCount */
   readonly inPlane: Float32Array;
-  /** Pattern by pattern, mode by mode, node by node: coefficient of (1 - s^2) s^(2k+1). */
+  /** (faces - 1) x (N - 1) x nodeCount */
   readonly across: Float32Array;
-  /** Pattern by pattern, mode by mode, corner node by corner node: coefficient of s^2k. */
+  /** (faces - 1) x N x vertexCount */
   readonly pressure: Float32Array;
-  /** Pattern by pattern, mode by mode, three per boundary edge: wall traction along the wall, even modes. */
+  /** Side-wall shear along the boundary edge's direction: (faces - 1) x N x edges x 3 (start, end, middle). */
   readonly wallAlong: Float32Array;
-  /** The same for the traction across the plan (along the depth), odd modes. */
+  /** The same along the depth: (faces - 1) x (N - 1) x edges x 3. */
   readonly wallAcross: Float32Array;
 }
 
@@ -61,4 +62,8 @@ export interface CellSolution {
   /** Re-entrant corners without fillet, where shear is unbounded: the cell then has no peak. */
   readonly sharp: boolean;
   readonly checks: CellChecks;
+  /** Of the copy that was solved; null where only the port matrix was kept. */
+  readonly fields: CellFields | null;
+  /** How that copy lies on the shape that was given; several where the shape is symmetric in itself. */
+  readonly placements: readonly [Placement, ...Placement[]];
 }
