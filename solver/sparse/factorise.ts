@@ -42,7 +42,10 @@ export function emptyFactor(symbolic: Symbolic): Factor {
   };
 }
 
-/** A pivot below this times the square root of n (64 at least) units of round-off of its diagonal counts as zero. */
+/**
+ * A pivot counts as zero below 64 √n units of round-off of its diagonal: what is left of an exact zero after n
+ * steps was measured at up to 40 √n (a ring tied to nothing, 50 to 50 000 unknowns).
+ */
 const ROUND_OFF = 2 ** -52;
 
 /**
@@ -67,7 +70,7 @@ export function factorise(
 
   panels.fill(0);
   for (let p = 0; p < scatter.length; p += 1) panels[scatter[p]!] = value[p]!;
-  const slack = Math.max(64, Math.sqrt(n)) * ROUND_OFF;
+  const slack = 64 * Math.sqrt(n) * ROUND_OFF;
   for (let k = 0; k < n; k += 1) floor[k] = slack * Math.abs(value[columnStart[order[k]!]!]!);
 
   waiting.fill(-1);
