@@ -1,0 +1,157 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import { checkedChip } from '../chip/checked.ts';
+import { applyEdit } from '../chip/edits.ts';
+import { chipDigest, type Head, LIST_KINDS, LISTS, type PartKind, partHash } from '../chip/parts.ts';
+import { Chain, changesOf, readStep, type Step, stepOf } from '../journal/journal.ts';
+import { Stacks } from '../journal/stacks.ts';
+import { cellIsWhole } from '../kept/cells.ts';
+import { resultIsWhole } from '../kept/results.ts';
+import { trialIsWhole } from '../kept/trials.ts';
+import { strangeLayout } from '../layout/layout.ts';
+import { sameBytes } from '../store/hash.ts';
+import { readSeals, type Seal, type Sealed, sameSeal, sealOfAbout, sealOfRows } from '../store/seals.ts';
+import type { Store } from '../store/store.ts';
+import { Damage } from './damage.ts';
+
+/** What a project file holds, read and found whole. */
+export interface Content {
+  /** As it stands. */
+  readonly chip: Chip;
+  /** As it stood at the last folding, and after which step that was. */
+  readonly folded: Chip;
+  readonly foldedSeq: number;
+  readonly seq: number;
+  /** Hash of the last step, and of the one before the first that is kept. */
+  readonly hash: Uint8Array;
+  readonly base: { readonly seq: number; readonly hash: Uint8Array };
+  readonly stacks: Stacks;
+}
+
+/** Bytes that single parts may take; more is refused before it is read. */
+const MOST_PART = 32 * 1024 * 1024;
+
+/**
+ * Reads everything and checks everything: the file's own structure, that it declares what it should
+ * and nothing else, every row against its hash, every table against its seal, every step against the
+ * chain. Throws `Damage` where something is not as it was written.
+ */
+export function readContent(store: Store): Content {
+  checkStructure(store);
+  const seals = readSeals(store);
+  if (!seals) throw new Damage(['the record of what the file holds cannot be read']);
+  checkRows(store, seals);
+  const folded = readFolded(store, seals.chip);
+  const base = { seq: seals.base.seq, hash: seals.base.digest };
+  const { steps, chain, stacks } = readSteps(store, base, seals.journal, seals.chip.seq);
+  const chip = replay(store, folded, steps);
+  return { chip, folded, foldedSeq: seals.chip.seq, seq: chain.seq, hash: chain.hash, base, stacks };
+}
+
+/** The structure of the file and its declarations. */
+export function checkStructure(store: Store): void {
+  const strange = strangeLayout(store);
+  if (strange.length > 0) throw new Damage(['the file holds parts that do not belong in a project']);
+  if (store.pragma('quick_check(1)') !== 'ok') throw new Damage(['its inner structure is broken']);
+  if (store.all('PRAGMA foreign_key_check').length > 0) throw new Damage(['a trial lost its result']);
+}
+
+function checkRows(store: Store, seals: Readonly<Record<Sealed, Seal>>): void {
+  const reasons: string[] = [];
+  const need = (good: boolean, reason: string): void => {
+    if (!good) reasons.push(reason);
+  };
+  need(sameSeal(sealOfAbout(store), seals.about), 'what it says about itself was altered');
+  for (const table of ['result', 'trial'] as const) {
+    const whole = table === 'result' ? resultIsWhole : trialIsWhole;
+    let good = true;
+    for (const row of store.iterate(`SELECT * FROM ${table}`)) good &&= whole(row);
+    need(good && sameSeal(sealOfRows(store, table), seals[table]), `its ${table}s were altered`);
+  }
+  let good = true;
+  for (const row of store.iterate('SELECT key, body, hash FROM cell')) good &&= cellIsWhole(row);
+  need(good, 'solved junctions kept in it were altered (they can be solved again)');
+  if (reasons.length > 0) throw new Damage(reasons);
+}
+
+/** The chip as of the last folding. */
+function readFolded(store: Store, seal: Seal): Chip {
+  const altered = new Damage(['the drawing was altered']);
+  const size = store.get('SELECT max(octet_length(body)) AS size FROM chip');
+  if (Number(size?.size) > MOST_PART) throw altered;
+  const lists: Record<PartKind, unknown[]> = {
+    head: [],
+    layer: [],
+    channel: [],
+    chamber: [],
+    via: [],
+    port: [],
+    target: [],
+    limit: [],
+  };
+  const hashes: Record<PartKind, Uint8Array[]> = {
+    head: [],
+    layer: [],
+    channel: [],
+    chamber: [],
+    via: [],
+    port: [],
+    target: [],
+    limit: [],
+  };
+  let rows = 0;
+  for (const row of store.iterate('SELECT kind, place, body, hash FROM chip ORDER BY kind, place')) {
+    rows += 1;
+    const kind = String(row.kind) as PartKind;
+    const list = Object.hasOwn(lists, kind) ? lists[kind] : null;
+    const body = row.body;
+    if (!list || row.place !== list.length || typeof body !== 'string') throw altered;
+    const hash = partHash(kind, body);
+    if (!sameBytes(row.hash, hash)) throw altered;
+    hashes[kind].push(hash);
+    list.push(JSON.parse(body));
+  }
+  const digest = chipDigest([...hashes.head, ...LIST_KINDS.flatMap((kind) => hashes[kind])]);
+  if (lists.head.length !== 1 || rows !== seal.rows || !sameBytes(digest, seal.digest)) throw altered;
+  return checkedChip(assemble(lists));
+}
+
+/** A chip, still to be checked, from its parts. */
+export function assemble(lists: Readonly<Record<PartKind, readonly unknown[]>>): unknown {
+  const chip: Record<string, unknown> = { ...(lists.head[0] as Head) };
+  for (const kind of LIST_KINDS) chip[LISTS[kind]] = lists[kind];
+  return chip;
+}
+
+/** Walks every step kept; returns those after the folding. */
+function readSteps(
+  store: Store,
+  base: { seq: number; hash: Uint8Array },
+  seal: Seal,
+  foldedSeq: number,
+): { steps: Step[]; chain: Chain; stacks: Stacks } {
+  const altered = new Damage(['the record of edits was altered']);
+  const chain = new Chain(base);
+  const stacks = new Stacks();
+  const steps: Step[] = [];
+  let sealed = base.seq === seal.seq && sameBytes(base.hash, seal.digest);
+  for (const row of store.iterate('SELECT * FROM journal ORDER BY seq')) {
+    const step = stepOf(row);
+    if (!step || !chain.takes(step) || !stacks.take(step)) throw altered;
+    if (step.seq === seal.seq) sealed = sameBytes(step.hash, seal.digest);
+    if (step.seq > foldedSeq) steps.push(step);
+  }
+  if (!sealed || chain.seq < foldedSeq) throw altered;
+  return { steps, chain, stacks };
+}
+
+/** The chip after `steps`. */
+function replay(store: Store, folded: Chip, steps: readonly Step[]): Chip {
+  let chip = folded;
+  for (const step of steps) {
+    const edit = step.of === null ? step : readStep(store, step.of);
+    if (step.kind === 'start') throw new Damage(['the record of edits was altered']);
+    const { forward, backward } = changesOf(edit);
+    chip = applyEdit(chip, { label: step.label, changes: step.kind === 'undo' ? backward : forward });
+  }
+  return chip;
+}
