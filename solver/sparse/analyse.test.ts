@@ -11,11 +11,11 @@ function bruteForce(matrix: SymmetricMatrix, order: Int32Array): Set<number>[] {
   const n = matrix.n;
   const columns = Array.from({ length: n }, () => new Set<number>());
   for (let j = 0; j < n; j += 1) {
-    for (let i = j; i < n; i += 1) if (a[order[i]!]![order[j]!] !== 0 || i === j) columns[j]!.add(i);
+    for (let i = j; i < n; i += 1) if (a[order[i]][order[j]] !== 0 || i === j) columns[j].add(i);
   }
   for (let k = 0; k < n; k += 1) {
-    const below = [...columns[k]!].filter((i) => i > k);
-    for (const i of below) for (const j of below) if (i >= j) columns[j]!.add(i);
+    const below = [...columns[k]].filter((i) => i > k);
+    for (const i of below) for (const j of below) if (i >= j) columns[j].add(i);
   }
   return columns;
 }
@@ -24,7 +24,7 @@ describe('elimination tree, column counts and rows of blocks equal brute force',
   for (const kind of Object.keys(DEFINITE)) {
     test(kind, () => {
       for (const n of [0, 1, 2, 3, 5, 10, 50, 120]) {
-        const matrix = DEFINITE[kind]!(n, randomFrom(n + 1));
+        const matrix = DEFINITE[kind](n, randomFrom(n + 1));
         for (const wanted of [fillOrder(matrix), Int32Array.from({ length: n }, (_, k) => k)]) {
           const { order, parent, count } = elimination(matrix, wanted);
           const columns = bruteForce(matrix, order);
@@ -36,10 +36,10 @@ describe('elimination tree, column counts and rows of blocks equal brute force',
           const symbolic = analyse(matrix, wanted);
           expect(symbolic.factorEntries).toBe(columns.reduce((sum, column) => sum + column.size, 0));
           for (let s = 0; s < symbolic.blocks; s += 1) {
-            const rows = symbolic.rows.slice(symbolic.rowStart[s]!, symbolic.rowStart[s + 1]!);
+            const rows = symbolic.rows.slice(symbolic.rowStart[s], symbolic.rowStart[s + 1]);
             expect(rows).toEqual(Int32Array.from(new Set(rows)).sort());
-            for (let j = symbolic.firstColumn[s]!; j < symbolic.firstColumn[s + 1]!; j += 1) {
-              for (const i of columns[j]!) expect(rows).toContain(i);
+            for (let j = symbolic.firstColumn[s]; j < symbolic.firstColumn[s + 1]; j += 1) {
+              for (const i of columns[j]) expect(rows).toContain(i);
             }
           }
         }
@@ -52,7 +52,7 @@ describe('order of elimination', () => {
   test('a permutation of everything', () => {
     for (const kind of Object.keys(DEFINITE)) {
       for (const n of [0, 1, 2, 3, 5, 10, 50, 500, 5000]) {
-        const order = fillOrder(DEFINITE[kind]!(n, randomFrom(n)));
+        const order = fillOrder(DEFINITE[kind](n, randomFrom(n)));
         expect([...order].sort((a, b) => a - b)).toEqual(Array.from({ length: n }, (_, i) => i));
       }
     }

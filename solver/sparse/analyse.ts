@@ -21,37 +21,37 @@ export function analyse(pattern: SymmetricMatrix, wanted: Int32Array = fillOrder
   const rowStart = new Int32Array(blocks + 1);
   const panelStart = new Int32Array(blocks + 1);
   for (let s = 0; s < blocks; s += 1) {
-    const from = firstColumn[s]!;
-    const to = firstColumn[s + 1]!;
-    const height = to - from + count[to - 1]! - 1;
-    rowStart[s + 1] = rowStart[s]! + height;
-    const end = panelStart[s]! + height * (to - from);
+    const from = firstColumn[s];
+    const to = firstColumn[s + 1];
+    const height = to - from + count[to - 1] - 1;
+    rowStart[s + 1] = rowStart[s] + height;
+    const end = panelStart[s] + height * (to - from);
     if (end > 0x7fffffff) throw new RangeError('The factor has more than 2^31 values.');
     panelStart[s + 1] = end;
     blockOf.fill(s, from, to);
   }
   const blockParent = new Int32Array(blocks);
   for (let s = 0; s < blocks; s += 1) {
-    const up = parent[firstColumn[s + 1]! - 1]!;
-    blockParent[s] = up === -1 ? -1 : blockOf[up]!;
+    const up = parent[firstColumn[s + 1] - 1];
+    blockParent[s] = up === -1 ? -1 : blockOf[up];
   }
   const rows = blockRows(n, lower, firstColumn, blockOf, blockParent, rowStart);
 
-  const scatter = new Int32Array(columnStart[n]!);
+  const scatter = new Int32Array(columnStart[n]);
   const position = new Int32Array(n);
   for (let s = 0; s < blocks; s += 1) {
-    const from = firstColumn[s]!;
-    const to = firstColumn[s + 1]!;
+    const from = firstColumn[s];
+    const to = firstColumn[s + 1];
     const width = to - from;
-    const begin = rowStart[s]!;
-    const height = rowStart[s + 1]! - begin;
-    const base = panelStart[s]! - from;
-    for (let k = 0, at = base; k < height; k += 1, at += width) position[rows[begin + k]!] = at;
+    const begin = rowStart[s];
+    const height = rowStart[s + 1] - begin;
+    const base = panelStart[s] - from;
+    for (let k = 0, at = base; k < height; k += 1, at += width) position[rows[begin + k]] = at;
     for (let j = from; j < to; j += 1) {
-      scatter[columnStart[order[j]!]!] = position[j]! + j;
-      const end = lower.columnStart[j + 1]!;
-      for (let p = lower.columnStart[j]!; p < end; p += 1) {
-        scatter[lower.source[p]!] = position[lower.row[p]!]! + j;
+      scatter[columnStart[order[j]]] = position[j] + j;
+      const end = lower.columnStart[j + 1];
+      for (let p = lower.columnStart[j]; p < end; p += 1) {
+        scatter[lower.source[p]] = position[lower.row[p]] + j;
       }
     }
   }
@@ -59,8 +59,8 @@ export function analyse(pattern: SymmetricMatrix, wanted: Int32Array = fillOrder
   let factorEntries = 0;
   let operations = 0;
   for (let j = 0; j < n; j += 1) {
-    factorEntries += count[j]!;
-    operations += count[j]! * count[j]!;
+    factorEntries += count[j];
+    operations += count[j] * count[j];
   }
   return {
     n,

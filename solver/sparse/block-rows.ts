@@ -19,26 +19,26 @@ export function blockRows(
   rowStart: Int32Array,
 ): Int32Array {
   const blocks = firstColumn.length - 1;
-  const rows = new Int32Array(rowStart[blocks]!);
+  const rows = new Int32Array(rowStart[blocks]);
   const fill = new Int32Array(blocks);
   for (let s = 0; s < blocks; s += 1) {
-    let at = rowStart[s]!;
-    const end = firstColumn[s + 1]!;
-    for (let j = firstColumn[s]!; j < end; j += 1, at += 1) rows[at] = j;
+    let at = rowStart[s];
+    const end = firstColumn[s + 1];
+    for (let j = firstColumn[s]; j < end; j += 1, at += 1) rows[at] = j;
     fill[s] = at;
   }
   const seen = new Int32Array(blocks).fill(-1);
   for (let i = 0; i < n; i += 1) {
-    seen[blockOf[i]!] = i;
-    const end = lower.rowStart[i + 1]!;
-    for (let p = lower.rowStart[i]!; p < end; p += 1) {
-      let s = blockOf[lower.column[p]!]!;
+    seen[blockOf[i]] = i;
+    const end = lower.rowStart[i + 1];
+    for (let p = lower.rowStart[i]; p < end; p += 1) {
+      let s = blockOf[lower.column[p]];
       while (seen[s] !== i) {
         seen[s] = i;
-        const at = fill[s]!;
+        const at = fill[s];
         rows[at] = i;
         fill[s] = at + 1;
-        s = blockParent[s]!;
+        s = blockParent[s];
       }
     }
   }

@@ -24,8 +24,8 @@ export function blockUpdate(
 ): void {
   let j = first;
   for (; j + 1 < last; j += 2) {
-    const c0 = rows[rowStart + j]!;
-    const c1 = rows[rowStart + j + 1]!;
+    const c0 = rows[rowStart + j];
+    const c1 = rows[rowStart + j + 1];
     const y0 = from + j * width;
     const y1 = y0 + width;
     let i = j;
@@ -40,51 +40,51 @@ export function blockUpdate(
       let s20 = 0;
       let s21 = 0;
       for (let k = 0; k < width; k += 1) {
-        const u = panels[y0 + k]!;
-        const v = panels[y1 + k]!;
-        const a = panels[x0 + k]!;
+        const u = panels[y0 + k];
+        const v = panels[y1 + k];
+        const a = panels[x0 + k];
         s00 += a * u;
         s01 += a * v;
-        const b = panels[x1 + k]!;
+        const b = panels[x1 + k];
         s10 += b * u;
         s11 += b * v;
-        const c = panels[x2 + k]!;
+        const c = panels[x2 + k];
         s20 += c * u;
         s21 += c * v;
       }
-      const t0 = place[rows[rowStart + i]!]!;
-      const t1 = place[rows[rowStart + i + 1]!]!;
-      const t2 = place[rows[rowStart + i + 2]!]!;
-      panels[t0 + c0] = panels[t0 + c0]! - s00;
-      panels[t0 + c1] = panels[t0 + c1]! - s01;
-      panels[t1 + c0] = panels[t1 + c0]! - s10;
-      panels[t1 + c1] = panels[t1 + c1]! - s11;
-      panels[t2 + c0] = panels[t2 + c0]! - s20;
-      panels[t2 + c1] = panels[t2 + c1]! - s21;
+      const t0 = place[rows[rowStart + i]];
+      const t1 = place[rows[rowStart + i + 1]];
+      const t2 = place[rows[rowStart + i + 2]];
+      panels[t0 + c0] -= s00;
+      panels[t0 + c1] -= s01;
+      panels[t1 + c0] -= s10;
+      panels[t1 + c1] -= s11;
+      panels[t2 + c0] -= s20;
+      panels[t2 + c1] -= s21;
     }
     for (; i < height; i += 1) {
       const x0 = from + i * width;
       let s0 = 0;
       let s1 = 0;
       for (let k = 0; k < width; k += 1) {
-        const a = panels[x0 + k]!;
-        s0 += a * panels[y0 + k]!;
-        s1 += a * panels[y1 + k]!;
+        const a = panels[x0 + k];
+        s0 += a * panels[y0 + k];
+        s1 += a * panels[y1 + k];
       }
-      const t0 = place[rows[rowStart + i]!]!;
-      panels[t0 + c0] = panels[t0 + c0]! - s0;
-      panels[t0 + c1] = panels[t0 + c1]! - s1;
+      const t0 = place[rows[rowStart + i]];
+      panels[t0 + c0] -= s0;
+      panels[t0 + c1] -= s1;
     }
   }
   if (j === last) return;
 
-  const c0 = rows[rowStart + j]!;
+  const c0 = rows[rowStart + j];
   const y0 = from + j * width;
   for (let i = j; i < height; i += 1) {
     const x0 = from + i * width;
     let s0 = 0;
-    for (let k = 0; k < width; k += 1) s0 += panels[x0 + k]! * panels[y0 + k]!;
-    const t0 = place[rows[rowStart + i]!]!;
-    panels[t0 + c0] = panels[t0 + c0]! - s0;
+    for (let k = 0; k < width; k += 1) s0 += panels[x0 + k] * panels[y0 + k];
+    const t0 = place[rows[rowStart + i]];
+    panels[t0 + c0] -= s0;
   }
 }

@@ -20,11 +20,11 @@ export function columnCounts(
   /** Postorder number of the first descendant of each node. */
   const first = new Int32Array(n).fill(-1);
   for (let k = 0; k < n; k += 1) {
-    let j = post[k]!;
+    let j = post[k];
     count[j] = first[j] === -1 ? 1 : 0;
     while (j !== -1 && first[j] === -1) {
       first[j] = k;
-      j = parent[j]!;
+      j = parent[j];
     }
   }
   const furthest = new Int32Array(n).fill(-1);
@@ -33,32 +33,32 @@ export function columnCounts(
   for (let j = 0; j < n; j += 1) ancestor[j] = j;
 
   for (let k = 0; k < n; k += 1) {
-    const j = post[k]!;
-    const up = parent[j]!;
-    if (up !== -1) count[up] = count[up]! - 1;
-    const end = columnStart[j + 1]!;
-    for (let p = columnStart[j]!; p < end; p += 1) {
-      const i = row[p]!;
-      if (first[j]! <= furthest[i]!) continue;
-      furthest[i] = first[j]!;
-      count[j] = count[j]! + 1;
-      const leaf = previousLeaf[i]!;
+    const j = post[k];
+    const up = parent[j];
+    if (up !== -1) count[up] -= 1;
+    const end = columnStart[j + 1];
+    for (let p = columnStart[j]; p < end; p += 1) {
+      const i = row[p];
+      if (first[j] <= furthest[i]) continue;
+      furthest[i] = first[j];
+      count[j] += 1;
+      const leaf = previousLeaf[i];
       previousLeaf[i] = j;
       if (leaf === -1) continue;
       let meet = leaf;
-      while (meet !== ancestor[meet]) meet = ancestor[meet]!;
+      while (meet !== ancestor[meet]) meet = ancestor[meet];
       for (let s = leaf; s !== meet; ) {
-        const next = ancestor[s]!;
+        const next = ancestor[s];
         ancestor[s] = meet;
         s = next;
       }
-      count[meet] = count[meet]! - 1;
+      count[meet] -= 1;
     }
     if (up !== -1) ancestor[j] = up;
   }
   for (let k = 0; k < n; k += 1) {
-    const j = post[k]!;
-    const up = parent[j]!;
-    if (up !== -1) count[up] = count[up]! + count[j]!;
+    const j = post[k];
+    const up = parent[j];
+    if (up !== -1) count[up] += count[j];
   }
 }

@@ -17,11 +17,11 @@ export function eliminationTree(
   for (let k = 0; k < n; k += 1) {
     parent[k] = -1;
     ancestor[k] = -1;
-    const end = rowStart[k + 1]!;
-    for (let p = rowStart[k]!; p < end; p += 1) {
-      let i = column[p]!;
+    const end = rowStart[k + 1];
+    for (let p = rowStart[k]; p < end; p += 1) {
+      let i = column[p];
       while (i !== k) {
-        const next = ancestor[i]!;
+        const next = ancestor[i];
         ancestor[i] = k;
         if (next === -1) {
           parent[i] = k;

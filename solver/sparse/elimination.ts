@@ -25,7 +25,7 @@ export interface Elimination {
 export function elimination(pattern: SymmetricMatrix, wanted: Int32Array): Elimination {
   const { n } = pattern;
   const place = new Int32Array(n).fill(-1);
-  for (let k = 0; k < n; k += 1) place[wanted[k]!] = k;
+  for (let k = 0; k < n; k += 1) place[wanted[k]] = k;
   if (wanted.length !== n || place.includes(-1)) throw new RangeError('The order is not a permutation.');
 
   const given = lowerTriangle(pattern, place);
@@ -36,21 +36,21 @@ export function elimination(pattern: SymmetricMatrix, wanted: Int32Array): Elimi
   const counted = new Int32Array(n);
   columnCounts(n, given.columnStart, given.row, tree, post, counted);
   let most = 0;
-  for (let j = 0; j < n; j += 1) most = Math.max(most, counted[j]!);
+  for (let j = 0; j < n; j += 1) most = Math.max(most, counted[j]);
   postorder(n, tree, counted, most, post);
 
   const renumbered = new Int32Array(n);
-  for (let k = 0; k < n; k += 1) renumbered[post[k]!] = k;
+  for (let k = 0; k < n; k += 1) renumbered[post[k]] = k;
   const order = new Int32Array(n);
   const parent = new Int32Array(n);
   const count = new Int32Array(n);
   for (let k = 0; k < n; k += 1) {
-    const old = post[k]!;
-    const up = tree[old]!;
-    order[k] = wanted[old]!;
-    parent[k] = up === -1 ? -1 : renumbered[up]!;
-    count[k] = counted[old]!;
-    place[order[k]!] = k;
+    const old = post[k];
+    const up = tree[old];
+    order[k] = wanted[old];
+    parent[k] = up === -1 ? -1 : renumbered[up];
+    count[k] = counted[old];
+    place[order[k]] = k;
   }
   return { order, place, parent, count, lower: lowerTriangle(pattern, place) };
 }

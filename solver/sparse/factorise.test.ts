@@ -27,11 +27,11 @@ function factorRatio(matrix: SymmetricMatrix, symbolic: Symbolic, panels: Float6
   const { n, blocks, firstColumn, rowStart, rows, panelStart, order } = symbolic;
   const l = Array.from({ length: n }, () => new Float64Array(n));
   for (let s = 0; s < blocks; s += 1) {
-    const width = firstColumn[s + 1]! - firstColumn[s]!;
-    for (let k = rowStart[s]!; k < rowStart[s + 1]!; k += 1) {
+    const width = firstColumn[s + 1] - firstColumn[s];
+    for (let k = rowStart[s]; k < rowStart[s + 1]; k += 1) {
       for (let c = 0; c < width; c += 1) {
-        const j = firstColumn[s]! + c;
-        if (rows[k]! >= j) l[rows[k]!]![j] = panels[panelStart[s]! + (k - rowStart[s]!) * width + c]!;
+        const j = firstColumn[s] + c;
+        if (rows[k] >= j) l[rows[k]][j] = panels[panelStart[s] + (k - rowStart[s]) * width + c];
       }
     }
   }
@@ -39,8 +39,8 @@ function factorRatio(matrix: SymmetricMatrix, symbolic: Symbolic, panels: Float6
   let worst = 0;
   for (let i = 0; i < n; i += 1) {
     for (let j = 0; j <= i; j += 1) {
-      let sum = a[order[i]!]![order[j]!]!;
-      for (let k = 0; k <= j; k += 1) sum -= l[i]![k]! * l[j]![k]!;
+      let sum = a[order[i]][order[j]];
+      for (let k = 0; k <= j; k += 1) sum -= l[i][k] * l[j][k];
       worst = Math.max(worst, Math.abs(sum));
     }
   }
@@ -60,7 +60,7 @@ for (const kind of Object.keys(DEFINITE)) {
       let worst = 0;
       for (const n of SIZES) {
         const random = randomFrom(n + 17);
-        const matrix = DEFINITE[kind]!(n, random);
+        const matrix = DEFINITE[kind](n, random);
         const symbolic = analyse(matrix);
         const factor = factorise(symbolic, matrix);
         const b = rightSide(n, random);
@@ -79,13 +79,13 @@ describe('two routes agree', () => {
     test(`${kind}: with row exchanges on the full matrix, signed by columns, in another order`, () => {
       for (const n of [1, 2, 3, 5, 10, 50, 200, 5000]) {
         const random = randomFrom(n + 5);
-        const matrix = DEFINITE[kind]!(n, random);
+        const matrix = DEFINITE[kind](n, random);
         const b = rightSide(n, random);
         const x = b.slice();
         solve(factorise(analyse(matrix), matrix), x);
         const size = x.reduce((m, v) => Math.max(m, Math.abs(v)), 0);
         const close = (y: Float64Array) => {
-          for (let i = 0; i < n; i += 1) expect(Math.abs(y[i]! - x[i]!) / size).toBeLessThan(1e-10);
+          for (let i = 0; i < n; i += 1) expect(Math.abs(y[i] - x[i]) / size).toBeLessThan(1e-10);
         };
         const signed = b.slice();
         solveIndefinite(factoriseIndefinite(matrix), signed);
@@ -121,7 +121,7 @@ test('several right sides at once: each as if alone', () => {
     const alone = b.slice();
     for (let c = 0; c < columns; c += 1) solve(factor, alone.subarray(120 * c, 120 * (c + 1)));
     solve(factor, b, columns);
-    for (let i = 0; i < b.length; i += 1) expect(Math.abs(b[i]! - alone[i]!)).toBeLessThan(1e-12);
+    for (let i = 0; i < b.length; i += 1) expect(Math.abs(b[i] - alone[i])).toBeLessThan(1e-12);
   }
 });
 

@@ -30,7 +30,7 @@ export function emptyFactor(symbolic: Symbolic): Factor {
   const { n, blocks, panelStart } = symbolic;
   return {
     symbolic,
-    panels: new Float64Array(panelStart[blocks]!),
+    panels: new Float64Array(panelStart[blocks]),
     workspace: {
       place: new Int32Array(n),
       floor: new Float64Array(n),
@@ -69,44 +69,44 @@ export function factorise(
   const { place, floor, waiting, next, reached } = workspace;
 
   panels.fill(0);
-  for (let p = 0; p < scatter.length; p += 1) panels[scatter[p]!] = value[p]!;
+  for (let p = 0; p < scatter.length; p += 1) panels[scatter[p]] = value[p];
   const slack = 64 * Math.sqrt(n) * ROUND_OFF;
-  for (let k = 0; k < n; k += 1) floor[k] = slack * Math.abs(value[columnStart[order[k]!]!]!);
+  for (let k = 0; k < n; k += 1) floor[k] = slack * Math.abs(value[columnStart[order[k]]]);
 
   waiting.fill(-1);
   for (let s = 0; s < blocks; s += 1) {
-    const column = firstColumn[s]!;
-    const end = firstColumn[s + 1]!;
+    const column = firstColumn[s];
+    const end = firstColumn[s + 1];
     const width = end - column;
-    const begin = rowStart[s]!;
-    const height = rowStart[s + 1]! - begin;
-    const base = panelStart[s]!;
-    for (let k = 0, at = base - column; k < height; k += 1, at += width) place[rows[begin + k]!] = at;
+    const begin = rowStart[s];
+    const height = rowStart[s + 1] - begin;
+    const base = panelStart[s];
+    for (let k = 0, at = base - column; k < height; k += 1, at += width) place[rows[begin + k]] = at;
 
-    for (let d = waiting[s]!; d !== -1; ) {
-      const after = next[d]!;
-      const dRows = rowStart[d]!;
-      const dHeight = rowStart[d + 1]! - dRows;
-      const first = reached[d]!;
+    for (let d = waiting[s]; d !== -1; ) {
+      const after = next[d];
+      const dRows = rowStart[d];
+      const dHeight = rowStart[d + 1] - dRows;
+      const first = reached[d];
       let last = first + 1;
-      while (last < dHeight && rows[dRows + last]! < end) last += 1;
-      const dWidth = firstColumn[d + 1]! - firstColumn[d]!;
-      blockUpdate(panels, panelStart[d]!, dWidth, rows, dRows, first, last, dHeight, place);
+      while (last < dHeight && rows[dRows + last] < end) last += 1;
+      const dWidth = firstColumn[d + 1] - firstColumn[d];
+      blockUpdate(panels, panelStart[d], dWidth, rows, dRows, first, last, dHeight, place);
       if (last < dHeight) {
         reached[d] = last;
-        const target = blockOf[rows[dRows + last]!]!;
-        next[d] = waiting[target]!;
+        const target = blockOf[rows[dRows + last]];
+        next[d] = waiting[target];
         waiting[target] = d;
       }
       d = after;
     }
 
     const bad = blockFactor(panels, base, width, height, floor, column);
-    if (bad >= 0) throw singular(symbolic, matrix, column + bad, panels[base + bad * width + bad]!);
+    if (bad >= 0) throw singular(symbolic, matrix, column + bad, panels[base + bad * width + bad]);
     if (height > width) {
       reached[s] = width;
-      const target = blockOf[rows[begin + width]!]!;
-      next[s] = waiting[target]!;
+      const target = blockOf[rows[begin + width]];
+      next[s] = waiting[target];
       waiting[target] = s;
     }
   }
@@ -114,7 +114,7 @@ export function factorise(
 }
 
 function singular(symbolic: Symbolic, matrix: SymmetricMatrix, k: number, pivot: number): SingularMatrix {
-  const column = symbolic.order[k]!;
-  const diagonal = Math.abs(matrix.value[matrix.columnStart[column]!]!);
+  const column = symbolic.order[k];
+  const diagonal = Math.abs(matrix.value[matrix.columnStart[column]]);
   return new SingularMatrix(column, diagonal > 0 ? pivot / diagonal : pivot);
 }

@@ -26,33 +26,33 @@ export function fillOrder(pattern: SymmetricMatrix): Int32Array {
   const start = new Int32Array(count + 1);
   for (let j = 0; j < n; j += 1) {
     if (left[j] === 0) continue;
-    const end = columnStart[j + 1]!;
-    for (let p = columnStart[j]! + 1; p < end; p += 1) {
-      const i = row[p]!;
+    const end = columnStart[j + 1];
+    for (let p = columnStart[j] + 1; p < end; p += 1) {
+      const i = row[p];
       if (left[i] === 0) continue;
-      start[local[i]! + 1] = start[local[i]! + 1]! + 1;
-      start[local[j]! + 1] = start[local[j]! + 1]! + 1;
+      start[local[i] + 1] += 1;
+      start[local[j] + 1] += 1;
     }
   }
-  for (let i = 0; i < count; i += 1) start[i + 1] = start[i + 1]! + start[i]!;
-  const graph = new Int32Array(start[count]! + count + 1);
+  for (let i = 0; i < count; i += 1) start[i + 1] += start[i];
+  const graph = new Int32Array(start[count] + count + 1);
   const fill = start.slice(0, count);
   for (let j = 0; j < n; j += 1) {
     if (left[j] === 0) continue;
-    const b = local[j]!;
-    const end = columnStart[j + 1]!;
-    for (let p = columnStart[j]! + 1; p < end; p += 1) {
-      const i = row[p]!;
+    const b = local[j];
+    const end = columnStart[j + 1];
+    for (let p = columnStart[j] + 1; p < end; p += 1) {
+      const i = row[p];
       if (left[i] === 0) continue;
-      const a = local[i]!;
-      graph[fill[a]!] = b;
-      fill[a] = fill[a]! + 1;
-      graph[fill[b]!] = a;
-      fill[b] = fill[b]! + 1;
+      const a = local[i];
+      graph[fill[a]] = b;
+      fill[a] += 1;
+      graph[fill[b]] = a;
+      fill[b] += 1;
     }
   }
   const coreOrder = new Int32Array(count);
   minimumDegree(count, start, graph, coreOrder);
-  for (let k = 0; k < count; k += 1) order[leaves + k] = core[coreOrder[k]!]!;
+  for (let k = 0; k < count; k += 1) order[leaves + k] = core[coreOrder[k]];
   return order;
 }

@@ -33,12 +33,12 @@ export function factoriseIndefinite(
   const { order, parent, count, lower } = elimination(matrix, wanted);
   const columnStart = new Int32Array(n + 1);
   for (let j = 0; j < n; j += 1) {
-    const end = columnStart[j]! + count[j]! - 1;
+    const end = columnStart[j] + count[j] - 1;
     if (end > 0x7fffffff) throw new RangeError('The factor has more than 2^31 values.');
     columnStart[j + 1] = end;
   }
-  const row = new Int32Array(columnStart[n]!);
-  const value = new Float64Array(columnStart[n]!);
+  const row = new Int32Array(columnStart[n]);
+  const value = new Float64Array(columnStart[n]);
   const pivot = new Float64Array(n);
   const fill = columnStart.slice(0, n);
 
@@ -47,11 +47,11 @@ export function factoriseIndefinite(
   const rowFill = lower.rowStart.slice(0, n);
   const sortedColumn = new Int32Array(lower.column.length);
   for (let j = 0; j < n; j += 1) {
-    for (let p = lower.columnStart[j]!; p < lower.columnStart[j + 1]!; p += 1) {
-      const at = rowFill[lower.row[p]!]!;
+    for (let p = lower.columnStart[j]; p < lower.columnStart[j + 1]; p += 1) {
+      const at = rowFill[lower.row[p]];
       sortedColumn[at] = j;
-      rowValue[at] = given[lower.source[p]!]!;
-      rowFill[lower.row[p]!] = at + 1;
+      rowValue[at] = given[lower.source[p]];
+      rowFill[lower.row[p]] = at + 1;
     }
   }
 
@@ -63,14 +63,14 @@ export function factoriseIndefinite(
     // Non-zeros of row k of L: the paths in the tree from the entries of A, in an order that eliminates first what comes first.
     let top = n;
     seen[k] = k;
-    let d = given[givenStart[order[k]!]!]!;
+    let d = given[givenStart[order[k]]];
     let largest = Math.abs(d);
-    for (let p = lower.rowStart[k]!; p < lower.rowStart[k + 1]!; p += 1) {
-      let i = sortedColumn[p]!;
-      y[i] = rowValue[p]!;
-      largest = Math.max(largest, Math.abs(y[i]!));
+    for (let p = lower.rowStart[k]; p < lower.rowStart[k + 1]; p += 1) {
+      let i = sortedColumn[p];
+      y[i] = rowValue[p];
+      largest = Math.max(largest, Math.abs(y[i]));
       let depth = 0;
-      for (; seen[i] !== k; i = parent[i]!) {
+      for (; seen[i] !== k; i = parent[i]) {
         path[depth] = i;
         depth += 1;
         seen[i] = k;
@@ -78,23 +78,23 @@ export function factoriseIndefinite(
       while (depth > 0) {
         top -= 1;
         depth -= 1;
-        pattern[top] = path[depth]!;
+        pattern[top] = path[depth];
       }
     }
     for (; top < n; top += 1) {
-      const i = pattern[top]!;
-      const yi = y[i]!;
+      const i = pattern[top];
+      const yi = y[i];
       y[i] = 0;
-      const end = fill[i]!;
-      for (let p = columnStart[i]!; p < end; p += 1) y[row[p]!] = y[row[p]!]! - value[p]! * yi;
-      const l = yi / pivot[i]!;
+      const end = fill[i];
+      for (let p = columnStart[i]; p < end; p += 1) y[row[p]] -= value[p] * yi;
+      const l = yi / pivot[i];
       d -= l * yi;
       row[end] = k;
       value[end] = l;
       fill[i] = end + 1;
     }
     if (!(Math.abs(d) > SMALLEST * largest))
-      throw new SingularMatrix(order[k]!, largest > 0 ? d / largest : d);
+      throw new SingularMatrix(order[k], largest > 0 ? d / largest : d);
     pivot[k] = d;
   }
   return { n, order, columnStart, row, value, pivot };
@@ -105,16 +105,16 @@ export function solveIndefinite(factor: IndefiniteFactor, b: Float64Array, colum
   const { n, order, columnStart, row, value, pivot } = factor;
   const x = new Float64Array(n);
   for (let c = 0; c < columns; c += 1) {
-    for (let k = 0; k < n; k += 1) x[k] = b[c * n + order[k]!]!;
+    for (let k = 0; k < n; k += 1) x[k] = b[c * n + order[k]];
     for (let j = 0; j < n; j += 1) {
-      const v = x[j]!;
-      for (let p = columnStart[j]!; p < columnStart[j + 1]!; p += 1) x[row[p]!] = x[row[p]!]! - value[p]! * v;
+      const v = x[j];
+      for (let p = columnStart[j]; p < columnStart[j + 1]; p += 1) x[row[p]] -= value[p] * v;
     }
     for (let j = n - 1; j >= 0; j -= 1) {
-      let v = x[j]! / pivot[j]!;
-      for (let p = columnStart[j]!; p < columnStart[j + 1]!; p += 1) v -= value[p]! * x[row[p]!]!;
+      let v = x[j] / pivot[j];
+      for (let p = columnStart[j]; p < columnStart[j + 1]; p += 1) v -= value[p] * x[row[p]];
       x[j] = v;
     }
-    for (let k = 0; k < n; k += 1) b[c * n + order[k]!] = x[k]!;
+    for (let k = 0; k < n; k += 1) b[c * n + order[k]] = x[k];
   }
 }

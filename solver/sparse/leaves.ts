@@ -16,29 +16,29 @@ export function peelLeaves(pattern: SymmetricMatrix, order: Int32Array, left: Ui
   for (let j = 0; j < n; j += 1) {
     let own = 0;
     let mixed = 0;
-    const end = columnStart[j + 1]!;
-    for (let p = columnStart[j]! + 1; p < end; p += 1) {
-      const i = row[p]!;
+    const end = columnStart[j + 1];
+    for (let p = columnStart[j] + 1; p < end; p += 1) {
+      const i = row[p];
       own += 1;
       mixed ^= i;
-      degree[i] = degree[i]! + 1;
-      neighbours[i] = neighbours[i]! ^ j;
+      degree[i] += 1;
+      neighbours[i] ^= j;
     }
-    degree[j] = degree[j]! + own;
-    neighbours[j] = neighbours[j]! ^ mixed;
+    degree[j] += own;
+    neighbours[j] ^= mixed;
   }
   left.fill(1);
   let count = 0;
   for (let start = 0; start < n; start += 1) {
     let leaf = start;
-    while (left[leaf] === 1 && degree[leaf]! <= 1) {
+    while (left[leaf] === 1 && degree[leaf] <= 1) {
       left[leaf] = 0;
       order[count] = leaf;
       count += 1;
       if (degree[leaf] === 0) break;
-      const next = neighbours[leaf]!;
-      degree[next] = degree[next]! - 1;
-      neighbours[next] = neighbours[next]! ^ leaf;
+      const next = neighbours[leaf];
+      degree[next] -= 1;
+      neighbours[next] ^= leaf;
       leaf = next;
     }
   }

@@ -21,37 +21,37 @@ export function lowerTriangle(pattern: SymmetricMatrix, place: Int32Array): Lowe
   const rowStart = new Int32Array(n + 1);
   const columnStart = new Int32Array(n + 1);
   for (let j = 0; j < n; j += 1) {
-    const a = place[j]!;
-    const end = start[j + 1]!;
-    for (let p = start[j]! + 1; p < end; p += 1) {
-      const b = place[rowOf[p]!]!;
+    const a = place[j];
+    const end = start[j + 1];
+    for (let p = start[j] + 1; p < end; p += 1) {
+      const b = place[rowOf[p]];
       const high = Math.max(a, b);
       const low = Math.min(a, b);
-      rowStart[high + 1] = rowStart[high + 1]! + 1;
-      columnStart[low + 1] = columnStart[low + 1]! + 1;
+      rowStart[high + 1] += 1;
+      columnStart[low + 1] += 1;
     }
   }
   for (let k = 0; k < n; k += 1) {
-    rowStart[k + 1] = rowStart[k + 1]! + rowStart[k]!;
-    columnStart[k + 1] = columnStart[k + 1]! + columnStart[k]!;
+    rowStart[k + 1] += rowStart[k];
+    columnStart[k + 1] += columnStart[k];
   }
-  const entries = rowStart[n]!;
+  const entries = rowStart[n];
   const column = new Int32Array(entries);
   const row = new Int32Array(entries);
   const source = new Int32Array(entries);
   const rowFill = rowStart.slice();
   const columnFill = columnStart.slice();
   for (let j = 0; j < n; j += 1) {
-    const a = place[j]!;
-    const end = start[j + 1]!;
-    for (let p = start[j]! + 1; p < end; p += 1) {
-      const b = place[rowOf[p]!]!;
+    const a = place[j];
+    const end = start[j + 1];
+    for (let p = start[j] + 1; p < end; p += 1) {
+      const b = place[rowOf[p]];
       const high = Math.max(a, b);
       const low = Math.min(a, b);
-      const atRow = rowFill[high]!;
+      const atRow = rowFill[high];
       column[atRow] = low;
       rowFill[high] = atRow + 1;
-      const atColumn = columnFill[low]!;
+      const atColumn = columnFill[low];
       row[atColumn] = high;
       source[atColumn] = p;
       columnFill[low] = atColumn + 1;

@@ -37,7 +37,7 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
   const chain = new Int32Array(n).fill(-1);
   const chainEnd = new Int32Array(n);
 
-  let free = n > 0 ? start[n]! : 0;
+  let free = n > 0 ? start[n] : 0;
   let stamp = 2;
   /** Largest weight of an element so far: by so much the marks of one round can exceed its stamp. */
   let heaviest = 0;
@@ -46,18 +46,18 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
   let ordered = 0;
 
   const emit = (variable: number) => {
-    for (let v = variable; v !== -1; v = chain[v]!) {
+    for (let v = variable; v !== -1; v = chain[v]) {
       order[ordered] = v;
       ordered += 1;
     }
   };
   const merge = (into: number, gone: number) => {
     size[gone] = 0;
-    chain[chainEnd[into]!] = gone;
-    chainEnd[into] = chainEnd[gone]!;
+    chain[chainEnd[into]] = gone;
+    chainEnd[into] = chainEnd[gone];
   };
   const enlist = (i: number, d: number) => {
-    const first = byDegree[d]!;
+    const first = byDegree[d];
     next[i] = first;
     previous[i] = -1;
     if (first !== -1) previous[first] = i;
@@ -66,31 +66,31 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
     if (d < least) least = d;
   };
   const delist = (i: number) => {
-    const before = previous[i]!;
-    const after = next[i]!;
+    const before = previous[i];
+    const after = next[i];
     if (after !== -1) previous[after] = before;
     if (before !== -1) next[before] = after;
-    else byDegree[degree[i]!] = after;
+    else byDegree[degree[i]] = after;
   };
   /** Moves the live lists to the front of the graph. */
   const compact = () => {
     for (let i = 0; i < n; i += 1) {
-      if (length[i]! === 0) continue;
-      const at = head[i]!;
-      head[i] = graph[at]!;
+      if (length[i] === 0) continue;
+      const at = head[i];
+      head[i] = graph[at];
       graph[at] = -i - 1;
     }
     let to = 0;
     for (let from = 0; from < free; ) {
-      const owner = -graph[from]! - 1;
+      const owner = -graph[from] - 1;
       if (owner < 0) {
         from += 1;
         continue;
       }
-      graph[to] = head[owner]!;
+      graph[to] = head[owner];
       head[owner] = to;
-      const count = length[owner]!;
-      for (let k = 1; k < count; k += 1) graph[to + k] = graph[from + k]!;
+      const count = length[owner];
+      for (let k = 1; k < count; k += 1) graph[to + k] = graph[from + k];
       to += count;
       from += count;
     }
@@ -101,7 +101,7 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
   let denseFirst = -1;
   for (let i = n - 1; i >= 0; i -= 1) {
     chainEnd[i] = i;
-    const d = start[i + 1]! - start[i]!;
+    const d = start[i + 1] - start[i];
     length[i] = d;
     if (d > dense) {
       size[i] = 0;
@@ -116,28 +116,28 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
 
   while (done < n) {
     while (byDegree[least] === -1) least += 1;
-    const p = byDegree[least]!;
+    const p = byDegree[least];
     delist(p);
-    const own = size[p]!;
+    const own = size[p];
     done += own;
 
     // The new element: the variables of p and of its elements.
-    const elementCount = elements[p]!;
-    if (elementCount > 0 && free + degree[p]! > graph.length) compact();
-    const pHead = head[p]!;
-    const pEnd = pHead + length[p]!;
+    const elementCount = elements[p];
+    if (elementCount > 0 && free + degree[p] > graph.length) compact();
+    const pHead = head[p];
+    const pEnd = pHead + length[p];
     // Without elements the new list fits where p's was.
     const listStart = elementCount === 0 ? pHead : free;
     let listEnd = listStart;
     size[p] = -own;
     let weight = 0;
     for (let k = pHead; k < pHead + elementCount; k += 1) {
-      const e = graph[k]!;
-      const eHead = head[e]!;
-      const eEnd = eHead + length[e]!;
+      const e = graph[k];
+      const eHead = head[e];
+      const eEnd = eHead + length[e];
       for (let q = eHead; q < eEnd; q += 1) {
-        const i = graph[q]!;
-        const s = size[i]!;
+        const i = graph[q];
+        const s = size[i];
         if (s <= 0) continue;
         weight += s;
         size[i] = -s;
@@ -149,8 +149,8 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
       length[e] = 0;
     }
     for (let k = pHead + elementCount; k < pEnd; k += 1) {
-      const i = graph[k]!;
-      const s = size[i]!;
+      const i = graph[k];
+      const s = size[i];
       if (s <= 0) continue;
       weight += s;
       size[i] = -s;
@@ -167,30 +167,30 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
       stamp = 2;
     }
     for (let k = listStart; k < listEnd; k += 1) {
-      const i = graph[k]!;
-      const s = -size[i]!;
-      const iHead = head[i]!;
-      const iEnd = iHead + elements[i]!;
+      const i = graph[k];
+      const s = -size[i];
+      const iHead = head[i];
+      const iEnd = iHead + elements[i];
       for (let q = iHead; q < iEnd; q += 1) {
-        const e = graph[q]!;
-        const m = mark[e]!;
+        const e = graph[q];
+        const m = mark[e];
         if (m >= stamp) mark[e] = m - s;
-        else if (m !== 0) mark[e] = degree[e]! + stamp - s;
+        else if (m !== 0) mark[e] = degree[e] + stamp - s;
       }
     }
 
     // New degree bounds; lists lose what p covers; variables that see nothing but p go with it.
     for (let k = listStart; k < listEnd; k += 1) {
-      const i = graph[k]!;
-      const iHead = head[i]!;
-      const iElementEnd = iHead + elements[i]!;
-      const iEnd = iHead + length[i]!;
+      const i = graph[k];
+      const iHead = head[i];
+      const iElementEnd = iHead + elements[i];
+      const iEnd = iHead + length[i];
       let to = iHead;
       let sum = 0;
       let key = 0;
       for (let q = iHead; q < iElementEnd; q += 1) {
-        const e = graph[q]!;
-        const m = mark[e]!;
+        const e = graph[q];
+        const m = mark[e];
         if (m === 0) continue;
         const outside = m - stamp;
         if (outside > 0) {
@@ -207,8 +207,8 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
       const kept = to - iHead + 1;
       const third = to;
       for (let q = iElementEnd; q < iEnd; q += 1) {
-        const j = graph[q]!;
-        const s = size[j]!;
+        const j = graph[q];
+        const s = size[j];
         if (s <= 0) continue;
         sum += s;
         key += j;
@@ -216,23 +216,23 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
         to += 1;
       }
       if (sum === 0) {
-        const s = -size[i]!;
+        const s = -size[i];
         merge(p, i);
         length[i] = 0;
         weight -= s;
         done += s;
         continue;
       }
-      if (sum < degree[i]!) degree[i] = sum;
+      if (sum < degree[i]) degree[i] = sum;
       // p goes in front; what stood there moves to the end of its part. There is room: i has lost p or an element.
-      graph[to] = graph[third]!;
-      graph[third] = graph[iHead]!;
+      graph[to] = graph[third];
+      graph[third] = graph[iHead];
       graph[iHead] = p;
       elements[i] = kept;
       length[i] = to - iHead + 1;
       key = (key & 0x7fffffff) % n;
       hash[i] = key;
-      next[i] = byHash[key]!;
+      next[i] = byHash[key];
       byHash[key] = i;
     }
     degree[p] = weight;
@@ -241,24 +241,24 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
 
     // Indistinguishable variables: same hash, then same lists.
     for (let k = listStart; k < listEnd; k += 1) {
-      const any = graph[k]!;
+      const any = graph[k];
       if (size[any] === 0) continue;
-      const key = hash[any]!;
-      let i = byHash[key]!;
+      const key = hash[any];
+      let i = byHash[key];
       byHash[key] = -1;
-      for (; i !== -1 && next[i] !== -1; i = next[i]!, stamp += 1) {
-        const iHead = head[i]!;
-        const count = length[i]!;
-        const elementsOfI = elements[i]!;
-        for (let q = iHead + 1; q < iHead + count; q += 1) mark[graph[q]!] = stamp;
+      for (; i !== -1 && next[i] !== -1; i = next[i], stamp += 1) {
+        const iHead = head[i];
+        const count = length[i];
+        const elementsOfI = elements[i];
+        for (let q = iHead + 1; q < iHead + count; q += 1) mark[graph[q]] = stamp;
         let last = i;
-        for (let j = next[i]!; j !== -1; ) {
+        for (let j = next[i]; j !== -1; ) {
           let same = length[j] === count && elements[j] === elementsOfI;
-          const jHead = head[j]!;
-          for (let q = jHead + 1; same && q < jHead + count; q += 1) same = mark[graph[q]!] === stamp;
-          const after = next[j]!;
+          const jHead = head[j];
+          for (let q = jHead + 1; same && q < jHead + count; q += 1) same = mark[graph[q]] === stamp;
+          const after = next[j];
           if (same) {
-            size[i] = size[i]! + size[j]!;
+            size[i] += size[j];
             merge(i, j);
             length[j] = 0;
             next[last] = after;
@@ -274,11 +274,11 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
     let to = listStart;
     const remaining = n - done;
     for (let k = listStart; k < listEnd; k += 1) {
-      const i = graph[k]!;
-      const s = -size[i]!;
+      const i = graph[k];
+      const s = -size[i];
       if (s <= 0) continue;
       size[i] = s;
-      const bound = degree[i]! + weight - s;
+      const bound = degree[i] + weight - s;
       const d = Math.min(bound, remaining - s);
       enlist(i, d);
       graph[to] = i;
@@ -290,7 +290,7 @@ export function minimumDegree(n: number, start: Int32Array, graph: Int32Array, o
     size[p] = 0;
     emit(p);
   }
-  for (let i = denseFirst; i !== -1; i = next[i]!) {
+  for (let i = denseFirst; i !== -1; i = next[i]) {
     order[ordered] = i;
     ordered += 1;
   }

@@ -22,26 +22,26 @@ test('elements that share, repeat and are held fixed add up to the full matrix',
     const wanted = Array.from({ length: n }, () => new Float64Array(n));
     for (let e = 0; e < 15; e += 1) {
       const own = unknowns.slice(elementStart[e], elementStart[e + 1]);
-      let p = scatterStart[e]!;
+      let p = scatterStart[e];
       for (let a = 0; a < own.length; a += 1) {
         for (let b = 0; b <= a; b += 1, p += 1) {
           const v = random();
-          if (own[a]! < 0 || own[b]! < 0) {
+          if (own[a] < 0 || own[b] < 0) {
             expect(scatter[p]).toBe(-1);
             continue;
           }
-          matrix.value[scatter[p]!] = matrix.value[scatter[p]!]! + v;
-          wanted[own[a]!]![own[b]!] = wanted[own[a]!]![own[b]!]! + v;
-          if (a !== b) wanted[own[b]!]![own[a]!] = wanted[own[b]!]![own[a]!]! + v;
+          matrix.value[scatter[p]] += v;
+          wanted[own[a]][own[b]] += v;
+          if (a !== b) wanted[own[b]][own[a]] += v;
         }
       }
       expect(p).toBe(scatterStart[e + 1]);
     }
     const full = dense(matrix);
     for (let i = 0; i < n; i += 1) {
-      for (let j = 0; j < n; j += 1) expect(full[i]![j]).toBeCloseTo(wanted[i]![j]!, 12);
-      expect(matrix.row[matrix.columnStart[i]!]).toBe(i);
-      const rows = matrix.row.slice(matrix.columnStart[i]!, matrix.columnStart[i + 1]!);
+      for (let j = 0; j < n; j += 1) expect(full[i][j]).toBeCloseTo(wanted[i][j], 12);
+      expect(matrix.row[matrix.columnStart[i]]).toBe(i);
+      const rows = matrix.row.slice(matrix.columnStart[i], matrix.columnStart[i + 1]);
       expect(rows).toEqual(rows.slice().sort());
     }
   }

@@ -25,10 +25,10 @@ export function patternOfElements(n: number, elementStart: Int32Array, unknowns:
   const elements = elementStart.length - 1;
   const scatterStart = new Int32Array(elements + 1);
   for (let e = 0; e < elements; e += 1) {
-    const size = elementStart[e + 1]! - elementStart[e]!;
-    scatterStart[e + 1] = scatterStart[e]! + (size * (size + 1)) / 2;
+    const size = elementStart[e + 1] - elementStart[e];
+    scatterStart[e + 1] = scatterStart[e] + (size * (size + 1)) / 2;
   }
-  const entries = scatterStart[elements]!;
+  const entries = scatterStart[elements];
   const scatter = new Int32Array(entries).fill(-1);
 
   // Bucket the entries by column (smaller unknown), then each bucket by row (larger unknown) through a
@@ -37,12 +37,12 @@ export function patternOfElements(n: number, elementStart: Int32Array, unknowns:
   const high = new Int32Array(entries);
   const rowFill = new Int32Array(n + 1);
   for (let e = 0, entry = 0; e < elements; e += 1) {
-    const from = elementStart[e]!;
-    const to = elementStart[e + 1]!;
+    const from = elementStart[e];
+    const to = elementStart[e + 1];
     for (let a = from; a < to; a += 1) {
-      const ua = unknowns[a]!;
+      const ua = unknowns[a];
       for (let b = from; b <= a; b += 1, entry += 1) {
-        const ub = unknowns[b]!;
+        const ub = unknowns[b];
         if (ua < 0 || ub < 0) {
           low[entry] = -1;
           continue;
@@ -50,29 +50,29 @@ export function patternOfElements(n: number, elementStart: Int32Array, unknowns:
         low[entry] = Math.min(ua, ub);
         const row = Math.max(ua, ub);
         high[entry] = row;
-        rowFill[row + 1] = rowFill[row + 1]! + 1;
+        rowFill[row + 1] += 1;
       }
     }
   }
-  for (let i = 0; i < n; i += 1) rowFill[i + 1] = rowFill[i + 1]! + rowFill[i]!;
-  const kept = rowFill[n]!;
+  for (let i = 0; i < n; i += 1) rowFill[i + 1] += rowFill[i];
+  const kept = rowFill[n];
   const byRow = new Int32Array(kept);
   const columnFill = new Int32Array(n + 1);
   for (let entry = 0; entry < entries; entry += 1) {
-    const column = low[entry]!;
+    const column = low[entry];
     if (column < 0) continue;
-    const row = high[entry]!;
-    const at = rowFill[row]!;
+    const row = high[entry];
+    const at = rowFill[row];
     rowFill[row] = at + 1;
     byRow[at] = entry;
-    columnFill[column + 1] = columnFill[column + 1]! + 1;
+    columnFill[column + 1] += 1;
   }
-  for (let j = 0; j < n; j += 1) columnFill[j + 1] = columnFill[j + 1]! + columnFill[j]!;
+  for (let j = 0; j < n; j += 1) columnFill[j + 1] += columnFill[j];
   const byColumn = new Int32Array(kept);
   for (let k = 0; k < kept; k += 1) {
-    const entry = byRow[k]!;
-    const column = low[entry]!;
-    const at = columnFill[column]!;
+    const entry = byRow[k];
+    const column = low[entry];
+    const at = columnFill[column];
     columnFill[column] = at + 1;
     byColumn[at] = entry;
   }
@@ -85,9 +85,9 @@ export function patternOfElements(n: number, elementStart: Int32Array, unknowns:
     // The diagonal is stored even where no element touches the unknown, so that a hole shows as a zero pivot.
     row[size] = j;
     size += 1;
-    for (const end = columnFill[j]!; k < end; k += 1) {
-      const entry = byColumn[k]!;
-      const i = high[entry]!;
+    for (const end = columnFill[j]; k < end; k += 1) {
+      const entry = byColumn[k];
+      const i = high[entry];
       if (row[size - 1] !== i) {
         row[size] = i;
         size += 1;

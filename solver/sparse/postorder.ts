@@ -18,8 +18,8 @@ export function postorder(
   const sibling = new Int32Array(n);
   // Linked in descending order, so that the lists are ascending. Roots hang from node n.
   const link = (j: number) => {
-    const up = parent[j]! < 0 ? n : parent[j]!;
-    sibling[j] = firstChild[up]!;
+    const up = parent[j] < 0 ? n : parent[j];
+    sibling[j] = firstChild[up];
     firstChild[up] = j;
   };
   if (weight === null) {
@@ -28,29 +28,29 @@ export function postorder(
     const bucket = new Int32Array(heaviest + 1).fill(-1);
     const next = new Int32Array(n);
     for (let j = 0; j < n; j += 1) {
-      const w = weight[j]!;
-      next[j] = bucket[w]!;
+      const w = weight[j];
+      next[j] = bucket[w];
       bucket[w] = j;
     }
     for (let w = heaviest; w >= 0; w -= 1) {
-      for (let j = bucket[w]!; j !== -1; j = next[j]!) link(j);
+      for (let j = bucket[w]; j !== -1; j = next[j]) link(j);
     }
   }
   let count = 0;
-  let node = firstChild[n]!;
+  let node = firstChild[n];
   while (node !== -1) {
     // Down to the first leaf, then up as long as there is no sibling left to visit.
     while (firstChild[node] !== -1) {
-      const child = firstChild[node]!;
+      const child = firstChild[node];
       firstChild[node] = -1;
       node = child;
     }
     for (;;) {
       post[count] = node;
       count += 1;
-      const up = parent[node]!;
+      const up = parent[node];
       if (sibling[node] !== -1) {
-        node = sibling[node]!;
+        node = sibling[node];
         break;
       }
       if (up === -1) {

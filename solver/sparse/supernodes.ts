@@ -21,17 +21,17 @@ export function supernodes(n: number, parent: Int32Array, count: Int32Array): In
     blocks += 1;
     // The new column joins the block before it, and the joined block the one before that, as long as it pays.
     while (blocks > 1) {
-      const start = first[blocks - 1]!;
-      const before = first[blocks - 2]!;
-      if (parent[start - 1] === -1 || parent[start - 1]! > j || parent[start - 1]! < start) break;
+      const start = first[blocks - 1];
+      const before = first[blocks - 2];
+      if (parent[start - 1] === -1 || parent[start - 1] > j || parent[start - 1] < start) break;
       const w1 = start - before;
       const w2 = j + 1 - start;
       const width = w1 + w2;
       if (width > WIDEST) break;
-      const below = count[j]! - 1;
-      const height1 = w1 + count[start - 1]! - 1;
+      const below = count[j] - 1;
+      const height1 = w1 + count[start - 1] - 1;
       const added = w1 * (width + below - height1);
-      const inside = zeros[blocks - 2]! + zeros[blocks - 1]! + added;
+      const inside = zeros[blocks - 2] + zeros[blocks - 1] + added;
       const area = (width * (width + 1)) / 2 + width * below;
       if (added > 0 && !pays(width, inside, area)) break;
       blocks -= 1;

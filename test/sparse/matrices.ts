@@ -26,9 +26,9 @@ export function fromEntries(
     columnStart[j] = row.length;
     row.push(j);
     value.push(diagonal(j));
-    for (; k < keys.length && Math.floor(keys[k]! / n) === j; k += 1) {
-      row.push(keys[k]! % n);
-      value.push(below.get(keys[k]!)!);
+    for (; k < keys.length && Math.floor(keys[k] / n) === j; k += 1) {
+      row.push(keys[k] % n);
+      value.push(below.get(keys[k])!);
     }
   }
   columnStart[n] = row.length;
@@ -49,10 +49,10 @@ function dominant(
     if (below.has(key)) continue;
     const v = random() * 2 - 1;
     below.set(key, v);
-    sum[a] = sum[a]! + Math.abs(v);
-    sum[b] = sum[b]! + Math.abs(v);
+    sum[a] += Math.abs(v);
+    sum[b] += Math.abs(v);
   }
-  return fromEntries(n, (i) => sum[i]! * (1 + 0.1 * random()), below);
+  return fromEntries(n, (i) => sum[i] * (1 + 0.1 * random()), below);
 }
 
 function* randomPairs(n: number, count: number, random: () => number): Iterable<[number, number]> {
@@ -110,8 +110,8 @@ export const DEFINITE: Readonly<Record<string, (n: number, random: () => number)
 export function scaled(matrix: SymmetricMatrix, scale: (i: number) => number): SymmetricMatrix {
   const value = matrix.value.slice();
   for (let j = 0; j < matrix.n; j += 1) {
-    for (let p = matrix.columnStart[j]!; p < matrix.columnStart[j + 1]!; p += 1) {
-      value[p] = value[p]! * Math.sqrt(scale(matrix.row[p]!)) * Math.sqrt(scale(j));
+    for (let p = matrix.columnStart[j]; p < matrix.columnStart[j + 1]; p += 1) {
+      value[p] *= Math.sqrt(scale(matrix.row[p])) * Math.sqrt(scale(j));
     }
   }
   return { ...matrix, value };
@@ -120,10 +120,10 @@ export function scaled(matrix: SymmetricMatrix, scale: (i: number) => number): S
 export function dense(matrix: SymmetricMatrix): Float64Array[] {
   const full = Array.from({ length: matrix.n }, () => new Float64Array(matrix.n));
   for (let j = 0; j < matrix.n; j += 1) {
-    for (let p = matrix.columnStart[j]!; p < matrix.columnStart[j + 1]!; p += 1) {
-      const i = matrix.row[p]!;
-      full[i]![j] = matrix.value[p]!;
-      full[j]![i] = matrix.value[p]!;
+    for (let p = matrix.columnStart[j]; p < matrix.columnStart[j + 1]; p += 1) {
+      const i = matrix.row[p];
+      full[i][j] = matrix.value[p];
+      full[j][i] = matrix.value[p];
     }
   }
   return full;
@@ -133,11 +133,11 @@ export function dense(matrix: SymmetricMatrix): Float64Array[] {
 export function norm(matrix: SymmetricMatrix): number {
   const sum = new Float64Array(matrix.n);
   for (let j = 0; j < matrix.n; j += 1) {
-    for (let p = matrix.columnStart[j]!; p < matrix.columnStart[j + 1]!; p += 1) {
-      const i = matrix.row[p]!;
-      const v = Math.abs(matrix.value[p]!);
-      sum[i] = sum[i]! + v;
-      if (i !== j) sum[j] = sum[j]! + v;
+    for (let p = matrix.columnStart[j]; p < matrix.columnStart[j + 1]; p += 1) {
+      const i = matrix.row[p];
+      const v = Math.abs(matrix.value[p]);
+      sum[i] += v;
+      if (i !== j) sum[j] += v;
     }
   }
   return sum.reduce((a, b) => Math.max(a, b), 0);
@@ -147,10 +147,10 @@ export function norm(matrix: SymmetricMatrix): number {
 export function product(matrix: SymmetricMatrix, x: Float64Array): Float64Array {
   const y = new Float64Array(matrix.n);
   for (let j = 0; j < matrix.n; j += 1) {
-    for (let p = matrix.columnStart[j]!; p < matrix.columnStart[j + 1]!; p += 1) {
-      const i = matrix.row[p]!;
-      y[i] = y[i]! + matrix.value[p]! * x[j]!;
-      if (i !== j) y[j] = y[j]! + matrix.value[p]! * x[i]!;
+    for (let p = matrix.columnStart[j]; p < matrix.columnStart[j + 1]; p += 1) {
+      const i = matrix.row[p];
+      y[i] += matrix.value[p] * x[j];
+      if (i !== j) y[j] += matrix.value[p] * x[i];
     }
   }
   return y;
@@ -164,8 +164,8 @@ export function solveRatio(matrix: SymmetricMatrix, x: Float64Array, b: Float64A
   let residual = 0;
   let size = 0;
   for (let i = 0; i < matrix.n; i += 1) {
-    residual = Math.max(residual, Math.abs(b[i]! - y[i]!));
-    size = Math.max(size, Math.abs(x[i]!));
+    residual = Math.max(residual, Math.abs(b[i] - y[i]));
+    size = Math.max(size, Math.abs(x[i]));
   }
   return residual === 0 ? 0 : residual / (EPS * norm(matrix) * size);
 }
@@ -177,22 +177,22 @@ export function denseSolve(full: Float64Array[], b: Float64Array): Float64Array 
   const x = b.slice();
   for (let k = 0; k < n; k += 1) {
     let best = k;
-    for (let i = k + 1; i < n; i += 1) if (Math.abs(a[i]![k]!) > Math.abs(a[best]![k]!)) best = i;
-    [a[k], a[best]] = [a[best]!, a[k]!];
-    [x[k], x[best]] = [x[best]!, x[k]!];
-    const pivot = a[k]!;
+    for (let i = k + 1; i < n; i += 1) if (Math.abs(a[i][k]) > Math.abs(a[best][k])) best = i;
+    [a[k], a[best]] = [a[best], a[k]];
+    [x[k], x[best]] = [x[best], x[k]];
+    const pivot = a[k];
     for (let i = k + 1; i < n; i += 1) {
-      const r = a[i]!;
-      const l = r[k]! / pivot[k]!;
+      const r = a[i];
+      const l = r[k] / pivot[k];
       if (l === 0) continue;
-      for (let j = k; j < n; j += 1) r[j] = r[j]! - l * pivot[j]!;
-      x[i] = x[i]! - l * x[k]!;
+      for (let j = k; j < n; j += 1) r[j] -= l * pivot[j];
+      x[i] -= l * x[k];
     }
   }
   for (let k = n - 1; k >= 0; k -= 1) {
-    let s = x[k]!;
-    for (let j = k + 1; j < n; j += 1) s -= a[k]![j]! * x[j]!;
-    x[k] = s / a[k]![k]!;
+    let s = x[k];
+    for (let j = k + 1; j < n; j += 1) s -= a[k][j] * x[j];
+    x[k] = s / a[k][k];
   }
   return x;
 }
