@@ -1,0 +1,153 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import { FIGURE_FACE, type Palette, SIZES, TEXT_FACE } from '../look/tokens.ts';
+import { type Camera, type Size, toScreen } from './camera.ts';
+import type { Room } from './room.ts';
+import type { PlaceWords, PortWords } from './words.ts';
+
+/** px: a port's ring is never smaller. */
+const LEAST_RING = 5;
+
+const onScreen = ([x, y]: readonly [number, number], { width, height }: Size, more: number): boolean =>
+  x > -more && y > -more && x < width + more && y < height + more;
+
+/** Rings with a point, and holes of vias as rings alone; all in two passes, whatever their number. */
+export function drawPorts(
+  ctx: CanvasRenderingContext2D,
+  chip: Chip,
+  camera: Camera,
+  size: Size,
+  palette: Palette,
+): void {
+  const rings: [number, number, number, boolean][] = [];
+  const collect = (at: readonly [number, number], diameter: number, point: boolean): void => {
+    const place = toScreen(camera, size, at);
+    const radius = Math.max(point ? LEAST_RING : 3, (diameter / 2) * camera.scale);
+    if (onScreen(place, size, radius)) rings.push([place[0], place[1], radius, point]);
+  };
+  for (const port of chip.ports) collect(port.at, port.diameter, true);
+  for (const via of chip.vias) collect(via.at, via.diameter, false);
+  ctx.beginPath();
+  for (const [x, y, radius] of rings) {
+    ctx.moveTo(x + radius, y);
+    ctx.arc(x, y, radius, 0, 2 * Math.PI);
+  }
+  ctx.fillStyle = palette.chip;
+  ctx.fill();
+  ctx.strokeStyle = palette.ink;
+  ctx.lineWidth = 1.25;
+  ctx.stroke();
+  ctx.beginPath();
+  for (const [x, y, , point] of rings) {
+    if (!point) continue;
+    ctx.moveTo(x + 1.75, y);
+    ctx.arc(x, y, 1.75, 0, 2 * Math.PI);
+  }
+  ctx.fillStyle = palette.ink;
+  ctx.fill();
+}
+
+const LINE = 14;
+
+/** Names and figures beside the ports, as many as have room. */
+export function drawPortWords(
+  ctx: CanvasRenderingContext2D,
+  words: readonly PortWords[],
+  camera: Camera,
+  size: Size,
+  palette: Palette,
+  room: Room,
+): void {
+  ctx.textBaseline = 'middle';
+  for (const { port, name, figure, side, missed } of words) {
+    const at = toScreen(camera, size, port.at);
+    if (!onScreen(at, size, 80)) continue;
+    const away = Math.max(LEAST_RING, (port.diameter / 2) * camera.scale) + 7;
+    const short = name.length > 24 ? `${name.slice(0, 23)}…` : name;
+    ctx.font = `600 ${SIZES.label}px ${FIGURE_FACE}`;
+    const width = Math.max(ctx.measureText(short).width, figure.length * 6);
+    const left = side === 'right' ? at[0] + away : side === 'left' ? at[0] - width / 2 : at[0] - width / 2;
+    const apart = side === 'left';
+    // beside the chip's left edge there is no room: name above, figure below
+    const top =
+      side === 'right' ? at[1] - LINE : side === 'below' ? at[1] + away - 4 : at[1] - away - 2 * LINE + 4;
+    if (!room.take(left, apart ? at[1] - away - LINE : top, width, apart ? 2 * (away + LINE) : 2 * LINE))
+      continue;
+    ctx.textAlign = side === 'right' ? 'left' : 'center';
+    const x = side === 'right' ? left : at[0];
+    ctx.fillStyle = palette.ink;
+    ctx.fillText(short, x, apart ? at[1] - away - LINE / 2 : top + LINE / 2);
+    ctx.font = `${missed ? 650 : 400} ${SIZES.label}px ${FIGURE_FACE}`;
+    ctx.fillStyle = missed ? palette.alarm : palette.soft;
+    ctx.fillText(figure, x, apart ? at[1] + away + LINE / 2 : top + LINE * 1.5);
+  }
+}
+
+/** A ring round the place and the words beside it. */
+export function drawPlaceWords(
+  ctx: CanvasRenderingContext2D,
+  words: readonly PlaceWords[],
+  camera: Camera,
+  size: Size,
+  palette: Palette,
+  room: Room,
+): void {
+  for (const { at: plan, head, more, alarm } of words) {
+    const at = toScreen(camera, size, plan);
+    if (!onScreen(at, size, 20)) continue;
+    const colour = alarm ? palette.alarm : palette.ink;
+    ctx.strokeStyle = colour;
+    ctx.lineWidth = 1.5;
+    ctx.beginPath();
+    ctx.arc(at[0], at[1], 11, 0, 2 * Math.PI);
+    ctx.stroke();
+    const short = clip(head, 44);
+    const rest = clip(more, 64);
+    ctx.font = `600 ${SIZES.verdict}px ${TEXT_FACE}`;
+    const headWide = ctx.measureText(short).width;
+    ctx.font = `${SIZES.label}px ${FIGURE_FACE}`;
+    const wide = Math.max(headWide, ctx.measureText(rest).width);
+    const place = roomBeside(at, wide, 36, size, room);
+    if (!place) continue;
+    // a ground under the words, so that channels do not run through them
+    ctx.globalAlpha = 0.86;
+    ctx.fillStyle = palette.chip;
+    ctx.fillRect(place.left - 4, place.top - 2, wide + 8, 40);
+    ctx.globalAlpha = 1;
+    ctx.textAlign = place.right ? 'right' : 'left';
+    const x = place.right ? place.left + wide : place.left;
+    ctx.textBaseline = 'middle';
+    ctx.font = `600 ${SIZES.verdict}px ${TEXT_FACE}`;
+    ctx.fillStyle = colour;
+    ctx.fillText(short, x, place.top + 10);
+    ctx.font = `${SIZES.label}px ${FIGURE_FACE}`;
+    ctx.fillStyle = palette.soft;
+    ctx.fillText(rest, x, place.top + 27);
+  }
+}
+
+const clip = (text: string, most: number): string =>
+  text.length > most ? `${text.slice(0, most - 1)}…` : text;
+
+function roomBeside(
+  [x, y]: readonly [number, number],
+  wide: number,
+  high: number,
+  size: Size,
+  room: Room,
+): { readonly left: number; readonly top: number; readonly right: boolean } | null {
+  const places = [
+    { left: x - 18 - wide, top: y - high - 4, right: true },
+    { left: x + 18, top: y - high - 4, right: false },
+    { left: x - 18 - wide, top: y + 6, right: true },
+    { left: x + 18, top: y + 6, right: false },
+  ];
+  for (const place of places)
+    if (
+      place.left > 4 &&
+      place.left + wide < size.width - 4 &&
+      place.top > 4 &&
+      room.take(place.left - 4, place.top - 2, wide + 8, high + 4)
+    )
+      return place;
+  return null;
+}

@@ -1,0 +1,195 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import type { PieceResult, Result } from '../../solver/chip/result.ts';
+import type { Kind } from '../../solver/chip/units.ts';
+
+/** What the colour of the fluid shows. */
+export const OVERLAYS = [
+  'share',
+  'speed',
+  'pressure',
+  'wall shear',
+  'time',
+  'off target',
+  'depth',
+  'findings',
+] as const;
+export type Overlay = (typeof OVERLAYS)[number];
+
+export interface Shown {
+  readonly overlay: Overlay;
+  readonly kind: Kind;
+  /** "peak wall shear in each channel and junction" */
+  readonly says: string;
+  /** Value of each piece by channel id, in the order of its pieces; null where it has none. */
+  readonly values: ReadonlyMap<string, readonly (number | null)[]>;
+  /** Ends of the ramp. */
+  readonly from: number;
+  readonly to: number;
+  readonly ramp: 'amount' | 'deviation';
+  /** A limit to mark on the legend. */
+  readonly limit: number | null;
+}
+
+const SAYS: Readonly<Record<Overlay, string>> = {
+  share: 'share of the flow that enters the chip',
+  speed: 'mean speed of the flow',
+  pressure: 'pressure, over each channel',
+  'wall shear': 'peak wall shear in each channel',
+  time: 'time a liquid stays in each channel',
+  'off target': 'how far each target is missed',
+  depth: 'depth of the layer',
+  findings: 'channels that a finding names',
+};
+const KINDS: Readonly<Record<Overlay, Kind>> = {
+  share: 'share',
+  speed: 'velocity',
+  pressure: 'pressure',
+  'wall shear': 'stress',
+  time: 'time',
+  'off target': 'share',
+  depth: 'length',
+  findings: 'number',
+};
+
+/** Mean pressure of a piece needs the pressures at its sites: found by walking out from the ports. */
+export function sitePressures(result: Result): ReadonlyMap<string, number> {
+  const at = new Map<string, number>();
+  for (const port of result.ports) at.set(`port:${port.id}`, port.pressure);
+  const edges = new Map<string, { readonly to: string; readonly drop: number }[]>();
+  const join = (from: string, to: string, drop: number): void => {
+    const list = edges.get(from) ?? [];
+    list.push({ to, drop });
+    edges.set(from, list);
+  };
+  for (const channel of result.channels)
+    for (const piece of channel.pieces) {
+      join(piece.from, piece.to, piece.pressureDrop);
+      join(piece.to, piece.from, -piece.pressureDrop);
+    }
+  const open = [...at.keys()];
+  for (let site = open.pop(); site !== undefined; site = open.pop()) {
+    for (const { to, drop } of edges.get(site) ?? []) {
+      if (at.has(to)) continue;
+      at.set(to, at.get(site)! - drop);
+      open.push(to);
+    }
+  }
+  return at;
+}
+
+function pieceValue(
+  overlay: Overlay,
+  piece: PieceResult,
+  total: number,
+  pressures: ReadonlyMap<string, number>,
+): number | null {
+  switch (overlay) {
+    case 'share':
+      return piece.flow === null || total === 0 ? null : Math.abs(piece.flow) / total;
+    case 'speed':
+      return piece.meanVelocity === null ? null : Math.abs(piece.meanVelocity);
+    case 'pressure': {
+      const from = pressures.get(piece.from);
+      return from === undefined ? null : from - piece.pressureDrop / 2;
+    }
+    case 'wall shear':
+      return piece.peakWallShear;
+    case 'time':
+      return piece.residenceTime;
+    default:
+      return null;
+  }
+}
+
+/** What to colour, for a chip and its result (null while unsolved). */
+export function shown(overlay: Overlay, chip: Chip, result: Result | null): Shown {
+  const values = new Map<string, (number | null)[]>();
+  if (overlay === 'depth') {
+    const depths = new Map(chip.layers.map((layer) => [layer.id, layer.depth / 1e9]));
+    for (const channel of chip.channels) values.set(channel.id, [depths.get(channel.layer) ?? null]);
+  } else if (overlay === 'findings') {
+    for (const finding of result?.findings ?? []) {
+      const id = finding.where.replace(/#\d+$/, '');
+      if (chip.channels.some((channel) => channel.id === id))
+        values.set(id, [finding.severity === 'note' ? 0.3 : 1]);
+    }
+  } else if (result && overlay === 'off target') {
+    for (const target of result.targets) {
+      const off = target.got === null ? null : target.got / target.wanted - 1;
+      if (target.channel !== undefined) values.set(target.channel, [off]);
+      else for (const id of channelsAt(chip, target.port!)) values.set(id, [off]);
+    }
+  } else if (result) {
+    const total = result.ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0);
+    const pressures = overlay === 'pressure' ? sitePressures(result) : new Map<string, number>();
+    for (const channel of result.channels)
+      values.set(
+        channel.id,
+        channel.pieces.map((piece) => pieceValue(overlay, piece, total, pressures)),
+      );
+  }
+  const limit = overlay === 'wall shear' ? shearLimit(chip) : null;
+  return {
+    overlay,
+    kind: KINDS[overlay],
+    says: SAYS[overlay],
+    values,
+    ramp: overlay === 'off target' ? 'deviation' : 'amount',
+    limit,
+    ...range(overlay, values, limit, chip),
+  };
+}
+
+/** The lowest stress that holds for the whole chip. */
+function shearLimit(chip: Chip): number | null {
+  let lowest: number | null = null;
+  for (const limit of chip.limits)
+    if ('shear' in limit && limit.where === undefined && (lowest === null || limit.shear < lowest))
+      lowest = limit.shear;
+  return lowest;
+}
+
+/** Channels that end at a port. */
+function channelsAt(chip: Chip, id: string): string[] {
+  const port = chip.ports.find((part) => part.id === id);
+  if (!port) return [];
+  const reach = Math.max(1, port.diameter / 2);
+  return chip.channels
+    .filter(({ path, layer }) => {
+      const near = (p: readonly [number, number]): boolean =>
+        Math.hypot(p[0] - port.at[0], p[1] - port.at[1]) <= reach;
+      return layer === port.layer && (near(path[0]!) || near(path.at(-1)!));
+    })
+    .map((channel) => channel.id);
+}
+
+function range(
+  overlay: Overlay,
+  values: ReadonlyMap<string, readonly (number | null)[]>,
+  limit: number | null,
+  chip: Chip,
+): { readonly from: number; readonly to: number } {
+  let low = Number.POSITIVE_INFINITY;
+  let high = Number.NEGATIVE_INFINITY;
+  for (const list of values.values())
+    for (const value of list)
+      if (value !== null) {
+        low = Math.min(low, value);
+        high = Math.max(high, value);
+      }
+  if (high < low) return { from: 0, to: 1 };
+  if (overlay === 'off target') {
+    const within = Math.max(0.01, ...chip.targets.map((target) => target.within));
+    const end = Math.max(within, Math.abs(low), Math.abs(high));
+    return { from: -end, to: end };
+  }
+  if (overlay === 'findings') return { from: 0, to: 1 };
+  // amounts begin at nothing; pressures below the outside begin where they are lowest
+  const from = Math.min(0, low);
+  const to = Math.max(high, limit ?? 0);
+  return { from, to: to > from ? to : from + 1 };
+}
+
+/** Place on the ramp, 0 to 1. */
+export const placeOn = ({ from, to }: Pick<Shown, 'from' | 'to'>, value: number): number =>
+  Math.min(1, Math.max(0, (value - from) / (to - from)));

@@ -1,0 +1,115 @@
+import type { Channel, Chip } from '../../solver/chip/chip.ts';
+import type { Graph } from '../../solver/chip/graph.ts';
+import { placeAlong } from '../geometry/path.ts';
+import type { Xy } from '../geometry/vector.ts';
+import { SHADES } from '../look/ramp.ts';
+import { placeOn, type Shown } from './overlay.ts';
+
+/** A stretch of channel that is drawn in one colour. */
+export interface Stretch {
+  readonly channel: Channel;
+  readonly channelIndex: number;
+  /** Of the pieces of its channel; -1 where the whole channel is one stretch. */
+  readonly piece: number;
+  readonly path: readonly Xy[];
+  /** At both ends, nm. */
+  readonly width: readonly [number, number];
+  readonly bendRadius: number;
+  /** Along the channel, nm, where it begins and ends. */
+  readonly start: number;
+  readonly stop: number;
+}
+
+/** The chip as stretches; what has not changed since `before` is taken over from there. */
+export interface Scene {
+  readonly chip: Chip;
+  readonly graph: Graph | null;
+  readonly stretches: readonly Stretch[];
+  /** First stretch of each channel, in the order of the chip, with one entry more at the end. */
+  readonly first: Int32Array;
+}
+
+/**
+ * Cuts each channel where the fluid divides. `graph` may be of an older chip: channels that are the same
+ * object in both keep their cuts, all others are one stretch until they are read anew.
+ */
+export function makeScene(chip: Chip, graph: Graph | null, graphChip: Chip | null): Scene {
+  const cuts = new Map<Channel, { start: number; stop: number; number: number }[]>();
+  if (graph && graphChip)
+    for (const piece of graph.pieces) {
+      const channel = graphChip.channels[piece.channelIndex]!;
+      const list = cuts.get(channel) ?? [];
+      list.push({ start: piece.start, stop: piece.stop, number: piece.number });
+      cuts.set(channel, list);
+    }
+  const stretches: Stretch[] = [];
+  const first = new Int32Array(chip.channels.length + 1);
+  chip.channels.forEach((channel, channelIndex) => {
+    first[channelIndex] = stretches.length;
+    const total = straightLength(channel.path);
+    const list = cuts.get(channel);
+    if (!list || list.length <= 1) {
+      stretches.push({
+        channel,
+        channelIndex,
+        piece: list ? 0 : -1,
+        path: channel.path,
+        width: channel.width,
+        bendRadius: channel.bendRadius,
+        start: 0,
+        stop: total,
+      });
+      return;
+    }
+    list.sort((a, b) => a.number - b.number);
+    list.forEach((cut, i) => {
+      // neighbours share their place, so that no sliver is left between them
+      const start = i === 0 ? 0 : cut.start;
+      const stop = i === list.length - 1 ? total : list[i + 1]!.start;
+      stretches.push({
+        channel,
+        channelIndex,
+        piece: i,
+        path: part(channel.path, start, stop),
+        width: [widthAt(channel, start / total), widthAt(channel, stop / total)],
+        bendRadius: channel.bendRadius,
+        start,
+        stop,
+      });
+    });
+  });
+  first[chip.channels.length] = stretches.length;
+  return { chip, graph, stretches, first };
+}
+
+const widthAt = ({ width }: Channel, share: number): number => width[0] + (width[1] - width[0]) * share;
+
+function straightLength(path: readonly Xy[]): number {
+  let total = 0;
+  for (let i = 1; i < path.length; i += 1)
+    total += Math.hypot(path[i]![0] - path[i - 1]![0], path[i]![1] - path[i - 1]![1]);
+  return total;
+}
+
+function part(path: readonly Xy[], start: number, stop: number): Xy[] {
+  const out: Xy[] = [placeAlong(path, start)];
+  let along = 0;
+  for (let i = 1; i < path.length; i += 1) {
+    along += Math.hypot(path[i]![0] - path[i - 1]![0], path[i]![1] - path[i - 1]![1]);
+    if (along > start && along < stop) out.push(path[i]!);
+  }
+  out.push(placeAlong(path, stop));
+  return out;
+}
+
+/** Shade of each stretch, 0 to `SHADES` - 1; -1 where it has no value. */
+export function shadesOf(scene: Scene, overlay: Shown): Int16Array {
+  const out = new Int16Array(scene.stretches.length).fill(-1);
+  scene.stretches.forEach((stretch, i) => {
+    const values = overlay.values.get(stretch.channel.id);
+    const value = values?.[values.length === 1 ? 0 : Math.max(0, stretch.piece)];
+    if (value === null || value === undefined) return;
+    out[i] = Math.round(placeOn(overlay, value) * (SHADES - 1));
+  });
+  return out;
+}
