@@ -1,13 +1,13 @@
 import { Problem } from '../solver/problem/problem.ts';
 import { Damage } from './check/damage.ts';
 import { Project } from './project.ts';
-import { checkedVersion, contentOf, damagedProblem } from './read.ts';
+import { checkedVersion, contentOf, damagedProblem, openInMemory } from './read.ts';
 import { Store } from './store/store.ts';
 
-/** Opens a project file for work. */
-export async function openProject(path: string): Promise<Project> {
+/** Opens a project file for work. It is checked whole before anything could be written to it. */
+export async function openForWork(path: string): Promise<Project> {
   await checkedVersion(path);
-  try {
+  return telling(path, () => {
     const checking = Store.open(path, 'read');
     try {
       contentOf(checking);
@@ -16,6 +16,19 @@ export async function openProject(path: string): Promise<Project> {
     }
     const store = Store.open(path, 'write');
     return new Project(store, path, contentOf(store), false);
+  });
+}
+
+/** Opens a project file as it stands, for looking only. */
+export async function openForReading(path: string): Promise<Project> {
+  await checkedVersion(path);
+  const store = await openInMemory(path);
+  return telling(path, () => new Project(store, path, contentOf(store), true));
+}
+
+function telling<T>(path: string, work: () => T): T {
+  try {
+    return work();
   } catch (error) {
     if (error instanceof Problem) throw error;
     throw damagedProblem(error instanceof Damage ? error : new Damage(['it cannot be opened']), path);

@@ -17,15 +17,26 @@ const MOST_BYTES = 1024 * 1024 * 1024;
 export async function checkedVersion(path: string): Promise<number> {
   const there = await stat(path).catch(() => null);
   if (!there)
-    throw new Problem('not-readable', 'There is no such file, or it cannot be reached.', path, 'Check where it is.');
-  if (!there.isFile()) throw new Problem('not-readable', 'This is not a file.', path, 'Choose a project file (.chw).');
+    throw new Problem(
+      'not-readable',
+      'There is no such file, or it cannot be reached.',
+      path,
+      'Check where it is.',
+    );
+  if (!there.isFile())
+    throw new Problem('not-readable', 'This is not a file.', path, 'Choose a project file (.chw).');
   if (there.size > MOST_BYTES)
     throw new Problem('too-many', 'The file is larger than 1 GB.', path, 'Open a smaller one.');
   const kind = kindOfFile(await firstBytes(path));
   if (kind.kind === 'empty')
     throw new Problem('project', 'The file is empty.', path, 'Go back to a backup, if this was a project.');
   if (kind.kind === 'foreign')
-    throw new Problem('project', 'This is no Channelwright project.', path, 'Choose a file that ends in .chw.');
+    throw new Problem(
+      'project',
+      'This is no Channelwright project.',
+      path,
+      'Choose a file that ends in .chw.',
+    );
   if (kind.version > VERSION)
     throw new Problem(
       'project',

@@ -9,7 +9,7 @@ const MOST_LISTED = 5000;
 const MOST_READ = 64 * 1024 * 1024;
 
 /** A path as the person meant it: "~" is their own folder, and it must be complete. */
-function whole(path: string): string {
+export function wholePath(path: string): string {
   const told = path === '~' || path.startsWith('~/') ? join(homedir(), path.slice(1)) : path;
   const absolute = resolve(told);
   if (absolute !== told && !/^([A-Za-z]:)?[\\/]/.test(told))
@@ -31,7 +31,7 @@ async function startFolder(): Promise<string> {
 
 export const fileRequests: Handlers<'files.list' | 'files.read' | 'files.write'> = {
   'files.list': async (_session, input) => {
-    const folder = input.folder === undefined ? await startFolder() : whole(input.folder);
+    const folder = input.folder === undefined ? await startFolder() : wholePath(input.folder);
     const found = await readdir(folder, { withFileTypes: true }).catch(() => {
       throw new Problem('not-readable', 'This folder cannot be read.', folder, 'Choose another folder.');
     });
@@ -56,11 +56,11 @@ export const fileRequests: Handlers<'files.list' | 'files.read' | 'files.write'>
     };
   },
   'files.read': async (_session, input) => {
-    const path = whole(input.path);
+    const path = wholePath(input.path);
     return { name: basename(path), bytes: await readBounded(path, MOST_READ) };
   },
   'files.write': async (_session, input) => {
-    const path = whole(input.path);
+    const path = wholePath(input.path);
     await replaceFile(path, input.content, input.replace === true);
     return { path };
   },

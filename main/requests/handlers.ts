@@ -3,6 +3,8 @@ import type { REQUESTS, RequestName } from '../contract/contract.ts';
 import type { Session } from '../session/session.ts';
 import { aboutRequests } from './about.ts';
 import { fileRequests } from './files.ts';
+import { keptRequests } from './kept.ts';
+import { projectRequests } from './project.ts';
 import { userRequests } from './user.ts';
 
 /** What answers a request: its input as checked, its output as listed. */
@@ -17,5 +19,7 @@ export type Handlers<N extends RequestName> = { readonly [K in N]: Handler<K> };
 export const HANDLERS = {
   ...aboutRequests,
   ...fileRequests,
+  ...keptRequests,
+  ...projectRequests,
   ...userRequests,
 };

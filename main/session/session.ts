@@ -1,10 +1,15 @@
-import type { EventData, EventName } from '../contract/contract.ts';
+import { Workplace, type WorkplaceSettings } from '../../db/workplace.ts';
+import type { Chip } from '../../solver/chip/chip.ts';
+import { Problem } from '../../solver/problem/problem.ts';
+import type { EventData, EventName, ProjectState } from '../contract/contract.ts';
+import { noteRecent } from '../user/recent.ts';
 import type { SessionSettings } from './messages.ts';
 
 /** What one window has open, in its own thread. */
 export class Session {
   readonly settings: SessionSettings;
   readonly #send: (name: string, data: unknown) => void;
+  #open: Workplace | null = null;
 
   constructor(settings: SessionSettings, send: (name: string, data: unknown) => void) {
     this.settings = settings;
@@ -15,6 +20,65 @@ export class Session {
     this.#send(name, data);
   }
 
+  get workplaceSettings(): WorkplaceSettings {
+    return {
+      userData: this.settings.userData,
+      program: this.settings.version,
+      onChange: () => {
+        if (this.#open) this.emit('project', this.#open.standing);
+      },
+      onTrouble: ({ kind, what, where, remedy }) => this.emit('problem', { kind, what, where, remedy }),
+    };
+  }
+
+  /** The open project; refuses where there is none. */
+  get workplace(): Workplace {
+    if (!this.#open)
+      throw new Problem('project', 'No project is open in this window.', '', 'Open one, or begin a new one.');
+    return this.#open;
+  }
+
+  get state(): ProjectState | null {
+    if (!this.#open) return null;
+    const { project, standing, notes } = this.#open;
+    return { ...standing, ...project.position, chip: project.chip, notes: [...notes] };
+  }
+
+  /** Opens a file in this window; what was open is closed once the new one is there. */
+  async open(path: string): Promise<ProjectState> {
+    const before = this.#open;
+    // The same file again: closed first, or it would find itself in use.
+    if (before && before.path === path) await this.close();
+    return await this.#take(await Workplace.open(this.workplaceSettings, path));
+  }
+
+  async draft(chip: Chip): Promise<ProjectState> {
+    return await this.#take(await Workplace.draft(this.workplaceSettings, chip));
+  }
+
+  async saveAs(path: string, replace: boolean): Promise<void> {
+    this.#open = await this.workplace.saveAs(path, replace);
+    await this.#noteRecent();
+    this.emit('project', this.#open.standing);
+  }
+
   /** Closes what is open; everything acknowledged is kept. */
-  async close(): Promise<void> {}
+  async close(): Promise<void> {
+    const open = this.#open;
+    this.#open = null;
+    await open?.close();
+  }
+
+  async #take(next: Workplace): Promise<ProjectState> {
+    const before = this.#open;
+    this.#open = next;
+    await before?.close();
+    await this.#noteRecent();
+    this.emit('project', next.standing);
+    return this.state!;
+  }
+
+  async #noteRecent(): Promise<void> {
+    if (this.#open) await noteRecent(this.settings.userData, this.#open.path).catch(() => undefined);
+  }
 }
