@@ -22,6 +22,14 @@ export function ratioToNumber({ num, den }: Ratio): number {
   return num < 0n ? -value : value;
 }
 
+/** A double as the ratio that it is. */
+export function numberToRatio(value: number): Ratio {
+  if (value === 0) return { num: 0n, den: 1n };
+  const shift = 53 - Math.floor(Math.log2(Math.abs(value)));
+  const whole = BigInt(value * 2 ** shift);
+  return shift > 0 ? { num: whole, den: 1n << BigInt(shift) } : { num: whole << BigInt(-shift), den: 1n };
+}
+
 /** The whole number nearest to num/den, halves away from zero. */
 export function ratioToInteger({ num, den }: Ratio): bigint {
   const size = num < 0n ? -num : num;

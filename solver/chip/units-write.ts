@@ -1,5 +1,6 @@
 import type { LengthUnit } from './chip.ts';
 import { inUnit, KINDS, type Kind, NM_PER_M, quantityOrNull } from './units.ts';
+import { numberToRatio, ratioToInteger } from './units-exact.ts';
 
 /** Nanometres in one of the units that a description may give plan lengths in. */
 export const NM_PER_UNIT: Readonly<Record<LengthUnit, number>> = {
@@ -32,6 +33,17 @@ function exactDecimal(value: number, unit: string, kind: Kind): number | null {
   return null;
 }
 
+/** A share in per cent to eighteen digits, one more than any double needs in any unit. */
+function percentText(share: number): string {
+  const { num, den } = numberToRatio(share);
+  const power = 17 - Math.floor(Math.log10(Math.abs(share)) + 2);
+  const scaled = {
+    num: num * 100n * 10n ** BigInt(Math.max(power, 0)),
+    den: den * 10n ** BigInt(Math.max(-power, 0)),
+  };
+  return `${ratioToInteger(scaled)}e${-power} %`;
+}
+
 /** Digits first, then whether the figure lies in the range that is easy to read. */
 function clumsiness(decimal: number): number {
   const digits = decimal.toExponential().replace(/e.*|[-.]/g, '').length;
@@ -43,7 +55,7 @@ function clumsiness(decimal: number): number {
  * A quantity as text that reads back to the very same double, in the unit of its kind that makes it
  * simplest: "10 uL/min", "25 degC", "2.5 kPa".
  */
-export function writeQuantity(value: number, kind: Exclude<Kind, 'number'>): string | number {
+export function writeQuantity(value: number, kind: Exclude<Kind, 'number'>): string {
   let best: string | null = null;
   let least = Number.POSITIVE_INFINITY;
   for (const unit of KINDS[kind].units) {
@@ -52,6 +64,6 @@ export function writeQuantity(value: number, kind: Exclude<Kind, 'number'>): str
     least = clumsiness(decimal);
     best = `${decimal} ${unit}`;
   }
-  // The SI unit has the factor one, where seventeen digits always read back; a bare number is SI too.
-  return best ?? value;
+  // Only a share has no unit of factor one, where seventeen digits would do.
+  return best ?? percentText(value);
 }

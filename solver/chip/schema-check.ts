@@ -1,0 +1,177 @@
+import { BOUNDS } from './bounds.ts';
+import type { Chip, Layer } from './chip.ts';
+import {
+  checkChamber,
+  checkChannel,
+  checkLayer,
+  checkOnLayer,
+  checkPort,
+  checkVia,
+} from './schema-check-parts.ts';
+import { checkFluid, checkLimit, checkTarget } from './schema-check-terms.ts';
+import { at, Fault, type Path, quoted } from './schema-fault.ts';
+import { nearest } from './schema-nearest.ts';
+
+/** The lists of a chip whose entries bear ids. */
+export const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports'] as const;
+export type ListName = (typeof LISTS)[number];
+
+/** Cross-sections that have a shape only together with a width, so that no chamber can have them. */
+const NEEDS_WIDTH: ReadonlySet<string> = new Set(['circle', 'ellipse', 'triangle', 'polygon']);
+
+function checkCounts(chip: Chip): void {
+  for (const name of [...LISTS, 'targets', 'limits'] as const) {
+    if (chip[name].length > BOUNDS[name]) {
+      throw new Fault(
+        'too-many',
+        `has ${chip[name].length.toLocaleString('en')} entries; at most ${BOUNDS[name].toLocaleString('en')} are kept.`,
+        'Split the chip.',
+        [name],
+      );
+    }
+  }
+  let points = 0;
+  for (const { path } of chip.channels) points += path.length;
+  for (const { outline } of chip.chambers) points += outline.length;
+  if (points > BOUNDS.points) {
+    throw new Fault(
+      'too-many',
+      `has ${points.toLocaleString('en')} points in its paths and outlines; at most ${BOUNDS.points.toLocaleString('en')} are kept.`,
+      'Draw with fewer points; a round bend takes one vertex and a bendRadius.',
+    );
+  }
+}
+
+/** Entries by id; throws where one is borne twice. Layers have their own names, all else shares one set. */
+function byId(chip: Chip): { layers: Map<string, Layer>; others: Map<string, ListName> } {
+  const layers = new Map<string, Layer>();
+  const others = new Map<string, ListName>();
+  const twice = (list: ListName, i: number, first: ListName, id: string): never => {
+    const j = chip[first].findIndex((entry) => entry.id === id);
+    throw new Fault(
+      'duplicate',
+      `${quoted(id)} is borne by ${first}[${j}] too.`,
+      'Give each channel, chamber, via and port an id of its own, and each layer.',
+      [list, i, 'id'],
+    );
+  };
+  chip.layers.forEach((layer, i) => {
+    if (layers.has(layer.id)) twice('layers', i, 'layers', layer.id);
+    layers.set(layer.id, layer);
+  });
+  for (const list of LISTS) {
+    if (list === 'layers') continue;
+    const entries: readonly { readonly id: string }[] = chip[list];
+    for (let i = 0; i < entries.length; i += 1) {
+      const { id } = entries[i]!;
+      const first = others.get(id);
+      if (first !== undefined) twice(list, i, first, id);
+      others.set(id, list);
+    }
+  }
+  return { layers, others };
+}
+
+const ONE: Readonly<Record<ListName, string>> = {
+  layers: 'layer',
+  channels: 'channel',
+  chambers: 'chamber',
+  vias: 'via',
+  ports: 'port',
+};
+
+function unknownId(id: string, what: string, known: Iterable<string>, path: Path): Fault {
+  const close = nearest(id, known);
+  return new Fault(
+    'reference',
+    `names ${quoted(id)}, but there is no such ${what}.`,
+    close === undefined ? `Add the ${what} first.` : `Did you mean ${quoted(close)}? Or add the ${what}.`,
+    path,
+  );
+}
+
+function each<T>(
+  list: ListName | 'targets' | 'limits',
+  entries: readonly T[],
+  check: (entry: T) => void,
+): void {
+  entries.forEach((entry, i) => {
+    at([list, i], () => check(entry));
+  });
+}
+
+/** Targets and limits name what is there. */
+function checkTerms(chip: Chip, others: ReadonlyMap<string, ListName>): void {
+  const named = (id: string, list: 'ports' | 'channels', ...path: Path): void => {
+    if (others.get(id) === list) return;
+    throw unknownId(
+      id,
+      ONE[list],
+      chip[list].map((entry) => entry.id),
+      path,
+    );
+  };
+  each('targets', chip.targets, (target) => {
+    if ('port' in target) named(target.port, 'ports', 'port');
+    else named(target.channel, 'channels', 'channel');
+    checkTarget(target);
+  });
+  each('limits', chip.limits, (limit) => {
+    const { where } = limit;
+    if (typeof where === 'string') {
+      if (!others.has(where))
+        throw unknownId(where, 'channel, chamber, via or port', others.keys(), ['where']);
+    } else if (where) {
+      for (const [j, id] of where.entries()) named(id, 'ports', 'where', j);
+    }
+    checkLimit(limit);
+  });
+}
+
+/**
+ * Throws a `Fault` at the first thing that makes a chip no chip: everything that needs no geometry.
+ * `touched` says which parts to look at by themselves, where the others are known to be sound; ids and
+ * references are always gone through whole.
+ */
+export function checkChip(chip: Chip, touched: (part: object) => boolean = () => true): void {
+  checkCounts(chip);
+  for (const key of ['width', 'height'] as const) {
+    if (!(chip.outline[key] > 0)) {
+      throw new Fault('range', 'must be above zero.', 'Give the size of the chip.', ['outline', key]);
+    }
+  }
+  if (touched(chip.fluid)) at(['fluid'], () => checkFluid(chip.fluid));
+  const { layers, others } = byId(chip);
+  const layerAt = (id: string, ...path: Path): Layer => {
+    const layer = layers.get(id);
+    if (layer === undefined) throw unknownId(id, 'layer', layers.keys(), path);
+    return layer;
+  };
+  each('layers', chip.layers, (layer) => {
+    if (touched(layer)) checkLayer(layer);
+  });
+  each('channels', chip.channels, (channel) => {
+    const layer = layerAt(channel.layer, 'layer');
+    if (touched(channel)) checkChannel(channel);
+    if (touched(channel) || touched(layer)) checkOnLayer(channel, layer);
+  });
+  each('chambers', chip.chambers, (chamber) => {
+    const layer = layerAt(chamber.layer, 'layer');
+    if (touched(chamber)) checkChamber(chamber);
+    if (!NEEDS_WIDTH.has(layer.profile.kind)) return;
+    throw new Fault(
+      'profile',
+      `lies on layer ${quoted(layer.id)}, whose cross-section (${layer.profile.kind}) has no shape without a channel's width.`,
+      'Put the chamber on a layer of profile "rectangle", "trapezoid" or "rounded".',
+    );
+  });
+  each('vias', chip.vias, (via) => {
+    for (const [j, id] of via.layers.entries()) layerAt(id, 'layers', j);
+    if (touched(via)) checkVia(via);
+  });
+  each('ports', chip.ports, (port) => {
+    layerAt(port.layer, 'layer');
+    if (touched(port)) checkPort(port);
+  });
+  checkTerms(chip, others);
+}
