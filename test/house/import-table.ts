@@ -53,8 +53,33 @@ export const TABLE: Readonly<Record<string, Room>> = {
     ],
     packages: ['flatbush', 'clipper2-ts'],
   },
+  'solver/lump': {
+    ours: [
+      'solver/problem',
+      'solver/fluid',
+      'solver/section',
+      'solver/chip',
+      'solver/cell',
+      'solver/network',
+    ],
+  },
+  'solver/report': {
+    ours: [
+      'solver/problem',
+      'solver/fluid',
+      'solver/section',
+      'solver/chip',
+      'solver/cell',
+      'solver/network',
+      'solver/exposure',
+      'solver/checks',
+      'solver/lump',
+    ],
+  },
   solver: {
     ours: [
+      'solver/lump',
+      'solver/report',
       'solver/problem',
       'solver/sparse',
       'solver/mesh',

@@ -1,0 +1,83 @@
+import type { Chip } from './chip/chip.ts';
+import type { Graph } from './chip/graph.ts';
+import type { DuctMemory } from './lump/lump.ts';
+import { type PreparedNetwork, prepareNetwork } from './network/prepare.ts';
+import { solveNetwork } from './network/solve-network.ts';
+import type { NetworkSolution, NetworkSpec } from './network/spec.ts';
+
+/**
+ * What may be kept between two solves of a chip that is being edited. Everything here is derived: an
+ * empty memory gives the same result, only later.
+ */
+export interface Memory {
+  readonly ducts: DuctMemory;
+  /** The last drawing's graph where nothing that it is read from has changed, else a new one. */
+  graph(chip: Chip, read: (chip: Chip) => Graph): Graph;
+  /** Solves, reusing the order and symbolic factorisation of the last network of the same topology. */
+  network(spec: NetworkSpec): NetworkSolution;
+}
+
+export function emptyMemory(): Memory {
+  let last: { chip: Chip; graph: Graph } | null = null;
+  let prepared: { spec: NetworkSpec; network: PreparedNetwork } | null = null;
+  return {
+    ducts: new Map(),
+    graph(chip, read) {
+      if (!last || !sameDrawing(last.chip, chip)) last = { chip, graph: read(chip) };
+      return last.graph;
+    },
+    network(spec) {
+      if (!prepared || !sameTopology(prepared.spec, spec)) prepared = { spec, network: prepareNetwork(spec) };
+      return solveNetwork(spec, prepared.network);
+    },
+  };
+}
+
+/** Whether two chips are drawn alike: drives, fluid, targets and limits do not matter. */
+function sameDrawing(a: Chip, b: Chip): boolean {
+  if (
+    a.layers !== b.layers ||
+    a.channels !== b.channels ||
+    a.chambers !== b.chambers ||
+    a.vias !== b.vias ||
+    a.outline !== b.outline
+  ) {
+    return false;
+  }
+  if (a.ports === b.ports) return true;
+  return (
+    a.ports.length === b.ports.length &&
+    a.ports.every((port, index) => {
+      const other = b.ports[index];
+      return (
+        port === other ||
+        (port.id === other.id &&
+          port.layer === other.layer &&
+          port.diameter === other.diameter &&
+          port.at[0] === other.at[0] &&
+          port.at[1] === other.at[1])
+      );
+    })
+  );
+}
+
+function sameTopology(a: NetworkSpec, b: NetworkSpec): boolean {
+  return (
+    a.nodeCount === b.nodeCount &&
+    sameNumbers(a.ductFrom, b.ductFrom) &&
+    sameNumbers(a.ductTo, b.ductTo) &&
+    a.blocks.length === b.blocks.length &&
+    a.blocks.every((block, index) => sameNumbers(block.nodes, b.blocks[index].nodes)) &&
+    a.drives.length === b.drives.length &&
+    a.drives.every((drive, index) => {
+      const other = b.drives[index];
+      return drive.node === other.node && drive.kind === other.kind && drive.series > 0 === other.series > 0;
+    })
+  );
+}
+
+function sameNumbers(a: Int32Array, b: Int32Array): boolean {
+  if (a.length !== b.length) return false;
+  for (let i = 0; i < a.length; i += 1) if (a[i] !== b[i]) return false;
+  return true;
+}

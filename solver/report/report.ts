@@ -1,0 +1,156 @@
+import type { Chip } from '../chip/chip.ts';
+import type { Graph } from '../chip/graph.ts';
+import type { CellResult, ChannelResult, PieceResult, PortResult, Result } from '../chip/result.ts';
+import { ductsBetween } from '../exposure/reach.ts';
+import type { Fluid } from '../fluid/fluid.ts';
+import type { Lumped } from '../lump/lump.ts';
+import { NANOMETRE } from '../lump/stretches.ts';
+import type { NetworkSolution } from '../network/spec.ts';
+import type { Finding } from '../problem/finding.ts';
+import { limitResults } from './limits.ts';
+import { pieceResult } from './pieces.ts';
+import { targetResults } from './targets.ts';
+
+/** The solved network in the chip's own terms. */
+export function report(
+  chip: Chip,
+  graph: Graph,
+  fluid: Fluid & { readonly viscosity: number },
+  lumped: Lumped,
+  flow: NetworkSolution,
+  before: readonly Finding[],
+): Result {
+  const pieces = lumped.stretches.map((stretch, index) =>
+    pieceResult(
+      stretch,
+      lumped.ducts[index],
+      resolved(flow.ductFlow[index], flow.ductUnresolved[index]),
+      flow.pressure[stretch.from] - flow.pressure[stretch.to] || 0,
+      fluid.viscosity,
+      fluid.density,
+    ),
+  );
+  const channels = byChannel(chip, graph, lumped, pieces);
+  const ports = portResults(chip, lumped, flow);
+  const cells: CellResult[] = [];
+  const between = (start: string, goal: string): Set<string> =>
+    piecesBetween(chip, graph, lumped, flow, start, goal);
+  const limits = limitResults(chip, channels, cells, between);
+  return {
+    format: 'channelwright-result',
+    version: 1,
+    chip: chip.name,
+    status: 'solved',
+    junctions: 'ideal',
+    fluid: { viscosity: fluid.viscosity, density: fluid.density },
+    ports,
+    channels,
+    cells,
+    routes: [],
+    targets: targetResults(chip, ports, channels, flow.throughput),
+    limits: limits.results,
+    balance: {
+      conservationResidual: flow.conservationResidual,
+      powerIn: flow.powerIn,
+      dissipation: flow.dissipation,
+    },
+    findings: [
+      ...before,
+      ...unresolvedFindings(lumped, graph, flow),
+      ...limits.findings,
+      ...idealNote(graph),
+    ],
+  };
+}
+
+/** Nothing at all is a flow of nought; what is there but too small for its digits is null. */
+function resolved(flow: number, unresolved: number): number | null {
+  if (flow === 0) return 0;
+  return unresolved === 1 || !Number.isFinite(flow) ? null : flow;
+}
+
+function portResults(chip: Chip, lumped: Lumped, flow: NetworkSolution): PortResult[] {
+  return chip.ports.map((port, index) => {
+    const drive = lumped.portDrive[index];
+    const value = drive < 0 ? 0 : resolved(flow.driveFlow[drive], flow.driveUnresolved[drive]);
+    const pressure = flow.pressure[lumped.portNode[index]];
+    return {
+      id: port.id,
+      pressure: Number.isFinite(pressure) ? pressure : 0,
+      flow: value,
+      share: value === null || flow.throughput === 0 ? null : Math.abs(value) / flow.throughput,
+    };
+  });
+}
+
+function byChannel(
+  chip: Chip,
+  graph: Graph,
+  lumped: Lumped,
+  pieces: readonly PieceResult[],
+): ChannelResult[] {
+  const lists: PieceResult[][] = chip.channels.map(() => []);
+  lumped.stretches.forEach((stretch, index) => {
+    lists[graph.pieces[stretch.piece].channelIndex].push(pieces[index]);
+  });
+  return chip.channels.map((channel, index) => ({ id: channel.id, pieces: lists[index] }));
+}
+
+function unresolvedFindings(lumped: Lumped, graph: Graph, flow: NetworkSolution): Finding[] {
+  const names: string[] = [];
+  let count = 0;
+  lumped.stretches.forEach((stretch, index) => {
+    if (resolved(flow.ductFlow[index], flow.ductUnresolved[index]) !== null) return;
+    count += 1;
+    const piece = graph.pieces[stretch.piece];
+    if (names.length < 4) names.push(`${piece.channel}#${piece.number}`);
+  });
+  if (count === 0) return [];
+  const more = count > names.length ? ` and ${count - names.length} more` : '';
+  return [
+    {
+      kind: 'unresolved-flow',
+      severity: 'note',
+      where: names[0],
+      says: `The flow in ${names.join(', ')}${more} is below 1e-9 of what flows through the chip: too small for its digits to mean anything.`,
+      do: 'Treat it as no flow, or close the balance of the branches it joins less exactly.',
+    },
+  ];
+}
+
+function idealNote(graph: Graph): Finding[] {
+  const junctions = graph.sites.filter((site) => site.kind === 'junction').length;
+  if (junctions === 0) return [];
+  const first = graph.sites.find((site) => site.kind === 'junction')!;
+  return [
+    {
+      kind: 'ideal-junctions',
+      severity: 'note',
+      where: first.name,
+      says: `${junctions === 1 ? 'The junction is' : `All ${junctions} junctions are`} taken as ideal: one pressure each, channels counted to the crossing of their centrelines.`,
+      do: 'Solve the junctions for compact networks, where this can be off by tens of per cent.',
+      at: [first.at[0] * NANOMETRE, first.at[1] * NANOMETRE],
+    },
+  ];
+}
+
+/** Names of the pieces that carry fluid from one port to another. */
+function piecesBetween(
+  chip: Chip,
+  graph: Graph,
+  lumped: Lumped,
+  flow: NetworkSolution,
+  start: string,
+  goal: string,
+): Set<string> {
+  const node = (id: string): number => lumped.portNode[chip.ports.findIndex((port) => port.id === id)];
+  const { nodeCount, ductFrom, ductTo } = lumped.spec;
+  const found = ductsBetween(nodeCount, ductFrom, ductTo, flow.ductFlow, node(start), node(goal));
+  const names = new Set<string>();
+  lumped.stretches.forEach((stretch, index) => {
+    if (found[index] === 0) return;
+    const piece = graph.pieces[stretch.piece];
+    names.add(`${piece.channel}#${piece.number}`);
+  });
+  return names;
+}
