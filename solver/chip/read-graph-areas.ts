@@ -133,7 +133,7 @@ function placePoint(
   let s = 0;
   let half = 0;
   for (const j of drawing.index?.search(x, y, x, y).sort((a, b) => a - b) ?? []) {
-    const b = drawing.bodies[j]!;
+    const b = drawing.body(j);
     const e = b.element;
     if (drawing.layerOf[e.channel] !== layer || !covers(b, x, y)) continue;
     const d = nearest(e.curve, x, y);
@@ -155,10 +155,10 @@ function outside(drawing: Drawing, kind: string, id: string, at: Point, layer: n
   let best = Infinity;
   let name = '';
   const nearby = drawing.index?.neighbors(at[0], at[1], 16, Infinity, (j) => {
-    return drawing.layerOf[drawing.bodies[j]!.element.channel] === layer;
+    return drawing.layerOf[drawing.elements.channel[j]!] === layer;
   });
   for (const j of nearby ?? []) {
-    const e = drawing.bodies[j]!.element;
+    const e = drawing.elements.at(j);
     const d = nearest(e.curve, at[0], at[1]);
     const [px, py] = pointAt(e.curve, d);
     const gap = Math.max(0, Math.hypot(px - at[0], py - at[1]) - halfAt(e, e.s0 + d));

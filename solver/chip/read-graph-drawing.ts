@@ -1,60 +1,97 @@
 import Flatbush from 'flatbush';
 import type { Finding } from '../problem/finding.ts';
 import type { Chip } from './chip.ts';
-import { type Body, body } from './geometry/body.ts';
-import { type Centreline, centreline } from './geometry/centreline.ts';
+import { type Body, loopsOverlap, outline } from './geometry/body.ts';
+import { addCentreline } from './geometry/centreline.ts';
+import { CURVATURE, Elements, S1, STRIDE } from './geometry/elements.ts';
+import { apart, CORNERS, corners, elementBox } from './geometry/packed.ts';
 import { TOUCH } from './geometry/tolerance.ts';
-
-/** The channels of a chip as bodies in the plan, with an index over them. */
-export interface Drawing {
-  readonly chip: Chip;
-  readonly lines: readonly Centreline[];
-  /** Layer index of each channel. */
-  readonly layerOf: Int32Array;
-  /** All elements of all channels, channel by channel. */
-  readonly bodies: readonly Body[];
-  /** First body of each channel, and the total at the end: channels + 1. */
-  readonly first: Int32Array;
-  /** Over the boxes of `bodies`; absent where there are none. */
-  readonly index: Flatbush | undefined;
-}
 
 export function layerNumbers(chip: Chip): Map<string, number> {
   return new Map(chip.layers.map((layer, i) => [layer.id, i]));
 }
 
-export function readDrawing(chip: Chip, findings: Finding[]): Drawing {
-  const numbers = layerNumbers(chip);
-  const count = chip.channels.length;
-  const lines: Centreline[] = [];
-  const layerOf = new Int32Array(count);
-  const first = new Int32Array(count + 1);
-  const bodies: Body[] = [];
-  for (let i = 0; i < count; i++) {
-    const channel = chip.channels[i]!;
-    const centre = centreline(channel, i, findings);
-    lines.push(centre);
-    layerOf[i] = numbers.get(channel.layer)!;
-    for (const e of centre.elements) bodies.push(body(e));
-    first[i + 1] = bodies.length;
-  }
-  let index: Flatbush | undefined;
-  if (bodies.length > 0) {
-    index = new Flatbush(bodies.length);
-    for (const b of bodies) index.add(b.minX - TOUCH, b.minY - TOUCH, b.maxX + TOUCH, b.maxY + TOUCH);
-    index.finish();
-  }
-  return { chip, lines, layerOf, bodies, first, index };
-}
+/** The channels of a chip in the plan, with an index over what their elements cover. */
+export class Drawing {
+  readonly chip: Chip;
+  readonly elements: Elements;
+  /** Layer index of each channel. */
+  readonly layerOf: Int32Array;
+  /** Least x, least y, greatest x, greatest y of what each element covers. */
+  readonly boxes: Float64Array;
+  /** Over the boxes; absent where there are none. */
+  readonly index: Flatbush | undefined;
+  readonly #p = new Float64Array(CORNERS);
+  readonly #q = new Float64Array(CORNERS);
 
-/** Place on a channel's centreline at a distance along it. */
-export function elementAt(drawing: Drawing, channel: number, s: number): Body {
-  let low = drawing.first[channel]!;
-  let high = drawing.first[channel + 1]! - 1;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (drawing.bodies[middle]!.element.s1 < s) low = middle + 1;
-    else high = middle;
+  constructor(chip: Chip, findings: Finding[]) {
+    const numbers = layerNumbers(chip);
+    const count = chip.channels.length;
+    this.chip = chip;
+    let room = 0;
+    for (const c of chip.channels) room += c.path.length * (c.bendRadius > 0 ? 2 : 1);
+    this.elements = new Elements(count, room);
+    this.layerOf = new Int32Array(count);
+    for (let i = 0; i < count; i++) {
+      const channel = chip.channels[i]!;
+      this.layerOf[i] = numbers.get(channel.layer)!;
+      addCentreline(this.elements, channel, i, findings);
+    }
+    const total = this.elements.count;
+    this.boxes = new Float64Array(4 * total);
+    if (total === 0) {
+      this.index = undefined;
+      return;
+    }
+    const index = new Flatbush(total);
+    const b = this.boxes;
+    for (let id = 0; id < total; id++) {
+      elementBox(this.elements, id, this.#p, b, 4 * id);
+      index.add(b[4 * id]! - TOUCH, b[4 * id + 1]! - TOUCH, b[4 * id + 2]! + TOUCH, b[4 * id + 3]! + TOUCH);
+    }
+    index.finish();
+    this.index = index;
   }
-  return drawing.bodies[low]!;
+
+  body(id: number): Body {
+    const b = this.boxes;
+    const element = this.elements.at(id);
+    return {
+      element,
+      minX: b[4 * id]!,
+      minY: b[4 * id + 1]!,
+      maxX: b[4 * id + 2]!,
+      maxY: b[4 * id + 3]!,
+      corners:
+        element.curve.curvature === 0
+          ? Array.from(this.#p.subarray(0, corners(this.elements, id, this.#p)))
+          : [],
+    };
+  }
+
+  /** Whether the covered areas of two elements overlap or touch, to TOUCH. */
+  overlap(i: number, j: number): boolean {
+    const { data } = this.elements;
+    if (data[i * STRIDE + CURVATURE] === 0 && data[j * STRIDE + CURVATURE] === 0) {
+      const p = this.#p;
+      const q = this.#q;
+      const n = corners(this.elements, i, p);
+      const m = corners(this.elements, j, q);
+      return !apart(p, n, q, m) && !apart(q, m, p, n);
+    }
+    return loopsOverlap(outline(this.body(i)), outline(this.body(j)));
+  }
+
+  /** Number of the element of a channel at a distance along it. */
+  elementAt(channel: number, s: number): number {
+    const { data, first } = this.elements;
+    let low = first[channel]!;
+    let high = first[channel + 1]! - 1;
+    while (low < high) {
+      const middle = (low + high) >> 1;
+      if (data[middle * STRIDE + S1]! < s) low = middle + 1;
+      else high = middle;
+    }
+    return low;
+  }
 }

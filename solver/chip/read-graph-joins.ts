@@ -1,13 +1,12 @@
-import { halfAt, overlap } from './geometry/body.ts';
-import { meet, pointAt } from './geometry/curve.ts';
+import { pointAt } from './geometry/curve.ts';
+import { CURVATURE, type Elements, H0, H1, LENGTH, S0, STRIDE, UX, UY, X0, Y0 } from './geometry/elements.ts';
+import { meetElements } from './geometry/packed.ts';
+import { TOUCH } from './geometry/tolerance.ts';
 import type { Drawing } from './read-graph-drawing.ts';
 import type { Links } from './read-graph-links.ts';
 
-/** Pairs of elements (numbers into Drawing.bodies, a < b) that the index brought together. */
+/** Pairs of elements (a < b) that the index brought together. */
 export interface Encounters {
-  /** Pairs whose centrelines meet. */
-  readonly metA: number[];
-  readonly metB: number[];
   /** Pairs whose covered areas overlap though their centrelines do not meet. */
   readonly overA: number[];
   readonly overB: number[];
@@ -20,39 +19,58 @@ export interface Encounters {
  * list of what overlaps without that. Candidates come from the index, never from all pairs.
  */
 export function joinChannels(drawing: Drawing, links: Links): Encounters {
-  const { bodies, layerOf, index } = drawing;
-  const found: Encounters = { metA: [], metB: [], overA: [], overB: [], sameLine: false };
+  const { elements, layerOf, boxes, index } = drawing;
+  const found: Encounters = { overA: [], overB: [], sameLine: false };
   if (!index) return found;
-  for (let i = 0; i < bodies.length; i++) {
-    const a = bodies[i]!;
-    const layer = layerOf[a.element.channel]!;
-    const near = index.search(a.minX, a.minY, a.maxX, a.maxY, (j) => j > i);
+  const { data, channel } = elements;
+  for (let i = 0; i < elements.count; i++) {
+    const near: number[] = index.search(
+      boxes[4 * i]!,
+      boxes[4 * i + 1]!,
+      boxes[4 * i + 2]!,
+      boxes[4 * i + 3]!,
+      (j) => j > i,
+    );
     if (near.length > 1) near.sort((p, q) => p - q);
+    const a = channel[i]!;
     for (const j of near) {
-      const b = bodies[j]!;
-      if (layerOf[b.element.channel] !== layer) continue;
-      const same = a.element.channel === b.element.channel;
-      if (same && b.element.index === a.element.index + 1) continue;
+      const b = channel[j]!;
+      if (layerOf[b] !== layerOf[a] || (a === b && j === i + 1)) continue;
       let meetings = 0;
-      meet(a.element.curve, b.element.curve, (s, t) => {
-        // a loop that closes on its own start is met here too, at its two ends
+      let lastS = 0;
+      let lastT = 0;
+      meetElements(elements, i, j, (s, t) => {
+        // an end on an end is met from both sides
+        if (meetings > 0 && Math.abs(s - lastS) <= TOUCH && Math.abs(t - lastT) <= TOUCH) return;
         meetings++;
-        const [x, y] = pointAt(a.element.curve, s);
-        const node = links.addNode(x, y);
-        const sa = a.element.s0 + s;
-        const sb = b.element.s0 + t;
-        links.addMark(node, a.element.channel, sa, sa, halfAt(a.element, sa));
-        links.addMark(node, b.element.channel, sb, sb, halfAt(b.element, sb));
+        lastS = s;
+        lastT = t;
+        addJoin(elements, links, i, s, j, t);
       });
       if (meetings > 0) {
-        found.metA.push(i);
-        found.metB.push(j);
-        if (meetings > 1 && a.element.curve.curvature === b.element.curve.curvature) found.sameLine = true;
-      } else if (overlap(a, b)) {
+        const bent = data[i * STRIDE + CURVATURE] !== data[j * STRIDE + CURVATURE];
+        if (meetings > 1 && !bent) found.sameLine = true;
+      } else if (drawing.overlap(i, j)) {
         found.overA.push(i);
         found.overB.push(j);
       }
     }
   }
   return found;
+}
+
+function addJoin(elements: Elements, links: Links, i: number, s: number, j: number, t: number): void {
+  const { data: d, channel } = elements;
+  const a = i * STRIDE;
+  const b = j * STRIDE;
+  let x = d[a + X0]! + d[a + UX]! * s;
+  let y = d[a + Y0]! + d[a + UY]! * s;
+  if (d[a + CURVATURE] !== 0) [x, y] = pointAt(elements.curve(i), s);
+  const node = links.addNode(x, y);
+  const sa = d[a + S0]! + s;
+  const sb = d[b + S0]! + t;
+  const halfA = d[a + H0]! + ((d[a + H1]! - d[a + H0]!) * s) / d[a + LENGTH]!;
+  const halfB = d[b + H0]! + ((d[b + H1]! - d[b + H0]!) * t) / d[b + LENGTH]!;
+  links.addMark(node, channel[i]!, sa, sa, halfA);
+  links.addMark(node, channel[j]!, sb, sb, halfB);
 }

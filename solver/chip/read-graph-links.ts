@@ -3,47 +3,88 @@
  * they leave on channels, as an interval of the distance along. Nodes found to be one place are united.
  */
 export class Links {
-  /** Union-find over nodes. */
-  readonly parent: number[] = [];
+  nodes = 0;
+  marks = 0;
+  /** Per node: union-find parent. */
+  parent: Int32Array;
   /** Smallest and largest half width met at the node, nm. */
-  readonly slim: number[] = [];
-  readonly stout: number[] = [];
+  slim: Float64Array;
+  stout: Float64Array;
   /** Sum of the places of the node's joins, and how many. */
-  readonly x: number[] = [];
-  readonly y: number[] = [];
-  readonly weight: number[] = [];
-  /** Per mark: channel, interval of the distance along, the part of it that pieces are measured from, node. */
-  readonly channel: number[] = [];
-  readonly low: number[] = [];
-  readonly high: number[] = [];
-  readonly coreLow: number[] = [];
-  readonly coreHigh: number[] = [];
-  readonly node: number[] = [];
+  x: Float64Array;
+  y: Float64Array;
+  weight: Float64Array;
+  /** Per mark: channel and node, interval of the distance along, and the part of it that pieces are measured from. */
+  channel: Int32Array;
+  node: Int32Array;
+  low: Float64Array;
+  high: Float64Array;
+  coreLow: Float64Array;
+  coreHigh: Float64Array;
   /** Channels taken on beyond their drawn ends: where to, and how far, nm. */
   readonly head = new Map<number, Extension>();
   readonly tail = new Map<number, Extension>();
 
+  /** `room` is how many nodes are expected; more find place too. */
+  constructor(room: number) {
+    const nodes = Math.max(room, 16);
+    this.parent = new Int32Array(nodes);
+    this.slim = new Float64Array(nodes);
+    this.stout = new Float64Array(nodes);
+    this.x = new Float64Array(nodes);
+    this.y = new Float64Array(nodes);
+    this.weight = new Float64Array(nodes);
+    const marks = 2 * nodes;
+    this.channel = new Int32Array(marks);
+    this.node = new Int32Array(marks);
+    this.low = new Float64Array(marks);
+    this.high = new Float64Array(marks);
+    this.coreLow = new Float64Array(marks);
+    this.coreHigh = new Float64Array(marks);
+  }
+
   addNode(x: number, y: number): number {
-    const id = this.parent.length;
-    this.parent.push(id);
-    this.slim.push(Infinity);
-    this.stout.push(0);
-    this.x.push(x);
-    this.y.push(y);
-    this.weight.push(1);
+    const id = this.nodes++;
+    if (id === this.parent.length) this.#growNodes(2 * id);
+    this.parent[id] = id;
+    this.slim[id] = Infinity;
+    this.stout[id] = 0;
+    this.x[id] = x;
+    this.y[id] = y;
+    this.weight[id] = 1;
     return id;
   }
 
   /** A mark whose pieces start at its edges, or (core given) at a place within, trimmed to its edges. */
   addMark(node: number, channel: number, low: number, high: number, half: number, core?: number): void {
-    this.channel.push(channel);
-    this.low.push(low);
-    this.high.push(high);
-    this.coreLow.push(core ?? low);
-    this.coreHigh.push(core ?? high);
-    this.node.push(node);
+    const id = this.marks++;
+    if (id === this.node.length) this.#growMarks(2 * id);
+    this.channel[id] = channel;
+    this.node[id] = node;
+    this.low[id] = low;
+    this.high[id] = high;
+    this.coreLow[id] = core ?? low;
+    this.coreHigh[id] = core ?? high;
     if (half < this.slim[node]!) this.slim[node] = half;
     if (half > this.stout[node]!) this.stout[node] = half;
+  }
+
+  #growNodes(size: number): void {
+    this.parent = longer(this.parent, new Int32Array(size));
+    this.slim = longer(this.slim, new Float64Array(size));
+    this.stout = longer(this.stout, new Float64Array(size));
+    this.x = longer(this.x, new Float64Array(size));
+    this.y = longer(this.y, new Float64Array(size));
+    this.weight = longer(this.weight, new Float64Array(size));
+  }
+
+  #growMarks(size: number): void {
+    this.channel = longer(this.channel, new Int32Array(size));
+    this.node = longer(this.node, new Int32Array(size));
+    this.low = longer(this.low, new Float64Array(size));
+    this.high = longer(this.high, new Float64Array(size));
+    this.coreLow = longer(this.coreLow, new Float64Array(size));
+    this.coreHigh = longer(this.coreHigh, new Float64Array(size));
   }
 
   root(node: number): number {
@@ -68,6 +109,11 @@ export class Links {
     this.y[p]! += this.y[q]!;
     this.weight[p]! += this.weight[q]!;
   }
+}
+
+function longer<A extends Int32Array | Float64Array>(old: A, fresh: A): A {
+  fresh.set(old);
+  return fresh;
 }
 
 export interface Extension {

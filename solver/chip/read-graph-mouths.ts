@@ -25,17 +25,22 @@ export function joinToArea(
   near.sort((p, q) => p - q);
   const entered = new Set<number>();
   const beside: number[] = [];
+  const taken: Taken[] = [];
   for (const i of near) {
-    const b = drawing.bodies[i]!;
+    const b = drawing.body(i);
     if (drawing.layerOf[b.element.channel] !== layer) continue;
-    if (enter(links, place, b)) entered.add(i);
+    if (enter(place, b, taken)) entered.add(i);
     else if (meets(place, b)) beside.push(i);
+  }
+  for (const t of taken) {
+    const core = place.kind === 'chamber' ? undefined : t.core;
+    links.addMark(place.node, t.channel, t.low, t.high, t.half, core);
   }
   // a run of neighbouring elements beside the area is one mouth; next to one that enters, it is explained
   for (let k = 0; k < beside.length; ) {
     const run = [beside[k]!];
-    const channel = drawing.bodies[beside[k]!]!.element.channel;
-    const sameChannel = (i: number) => drawing.bodies[i]?.element.channel === channel;
+    const channel = drawing.elements.channel[beside[k]!]!;
+    const sameChannel = (i: number) => drawing.elements.channel[i] === channel;
     for (k++; k < beside.length && beside[k] === run[run.length - 1]! + 1 && sameChannel(beside[k]!); k++) {
       run.push(beside[k]!);
     }
@@ -48,30 +53,50 @@ export function joinToArea(
   return entered.size > 0 || beside.length > 0;
 }
 
-/** Marks the stretches of an element's centreline in the area. */
-function enter(links: Links, place: Place, b: Body): boolean {
+/** A stretch of a channel's centreline in an area, with its place nearest to the area's centre. */
+interface Taken {
+  readonly channel: number;
+  readonly low: number;
+  high: number;
+  half: number;
+  core: number;
+  /** Distance of that place from the centre. */
+  off: number;
+}
+
+/** Adds the stretches of an element's centreline in the area, run on from those of the element before. */
+function enter(place: Place, b: Body, taken: Taken[]): boolean {
   const e = b.element;
   const { area } = place;
-  const at = cuts(area, e.curve);
-  const stops = [0, ...at, e.curve.length];
+  const stops = [0, ...cuts(area, e.curve), e.curve.length];
+  const inside = [false];
+  for (let k = 1; k < stops.length; k++) {
+    const [x, y] = pointAt(e.curve, (stops[k - 1]! + stops[k]!) / 2);
+    inside.push(stops[k]! - stops[k - 1]! > TOUCH && inArea(area, x, y));
+  }
+  inside.push(false);
   let any = false;
   for (let k = 1; k < stops.length; k++) {
-    const low = stops[k - 1]!;
-    const high = stops[k]!;
-    const [x, y] = pointAt(e.curve, (low + high) / 2);
-    const within = high - low > TOUCH && inArea(area, x, y);
     // a mere touch counts too
-    const touch = !within && k < stops.length - 1;
-    if (!within && !touch) continue;
+    const touch = k < stops.length - 1 && !inside[k] && !inside[k + 1];
+    if (!inside[k] && !touch) continue;
     any = true;
-    const from = e.s0 + (touch ? high : low);
-    const to = e.s0 + high;
-    if (place.kind === 'chamber') links.addMark(place.node, e.channel, from, to, halfAt(e, to));
-    else {
-      const foot = e.s0 + nearest(e.curve, place.at[0], place.at[1]);
-      const core = Math.min(Math.max(foot, from), to);
-      links.addMark(place.node, e.channel, from, to, halfAt(e, core), core);
-    }
+    const from = touch ? stops[k]! : stops[k - 1]!;
+    const to = stops[k]!;
+    const core = Math.min(Math.max(nearest(e.curve, place.at[0], place.at[1]), from), to);
+    const [x, y] = pointAt(e.curve, core);
+    const off = Math.hypot(x - place.at[0], y - place.at[1]);
+    const s = e.s0 + core;
+    const half = halfAt(e, s);
+    const last = taken[taken.length - 1];
+    if (last && last.channel === e.channel && e.s0 + from - last.high <= TOUCH) {
+      last.high = e.s0 + to;
+      last.half = Math.min(last.half, half);
+      if (off < last.off) {
+        last.off = off;
+        last.core = s;
+      }
+    } else taken.push({ channel: e.channel, low: e.s0 + from, high: e.s0 + to, half, core: s, off });
   }
   return any;
 }
@@ -90,13 +115,13 @@ function joinMouth(
   run: readonly number[],
   findings: Finding[],
 ): void {
-  const channel = drawing.bodies[run[0]!]!.element.channel;
-  const length = drawing.lines[channel]!.length;
+  const channel = drawing.elements.channel[run[0]!]!;
+  const length = drawing.elements.total(channel);
   const id = drawing.chip.channels[channel]!.id;
   for (const atEnd of [false, true]) {
-    const element = atEnd ? drawing.first[channel + 1]! - 1 : drawing.first[channel]!;
+    const element = atEnd ? drawing.elements.first[channel + 1]! - 1 : drawing.elements.first[channel]!;
     if (!run.includes(element)) continue;
-    const e = drawing.bodies[element]!.element;
+    const e = drawing.elements.at(element);
     const [ax, ay, bx, by] = endCorners(e, atEnd);
     const edge = line(ax, ay, bx, by);
     if (cuts(place.area, edge).length === 0 && !inArea(place.area, ax, ay)) continue;
@@ -144,21 +169,21 @@ function joinBeside(
   let low = Infinity;
   let high = -Infinity;
   const spread = (i: number, x: number, y: number) => {
-    const e = drawing.bodies[i]!.element;
+    const e = drawing.elements.at(i);
     const s = e.s0 + nearest(e.curve, x, y);
     low = Math.min(low, s);
     high = Math.max(high, s);
   };
   for (const i of run) {
-    const b = drawing.bodies[i]!;
+    const b = drawing.body(i);
     for (const edge of outline(b)) {
       if (inArea(place.area, edge.x0, edge.y0)) spread(i, edge.x0, edge.y0);
       for (const s of cuts(place.area, edge)) spread(i, ...pointAt(edge, s));
     }
   }
   const s = (low + high) / 2;
-  const at = run.find((i) => drawing.bodies[i]!.element.s1 >= s) ?? run[0]!;
-  const e = drawing.bodies[at]!.element;
+  const at = run.find((i) => drawing.elements.at(i).s1 >= s) ?? run[0]!;
+  const e = drawing.elements.at(at);
   links.addMark(place.node, e.channel, s, s, halfAt(e, s));
   const id = drawing.chip.channels[e.channel]!.id;
   const [x, y] = pointAt(e.curve, s - e.s0);

@@ -3,6 +3,7 @@ import { type Area, inArea, nearestEdge } from './geometry/area.ts';
 import { type Body, covers, endCorners, halfAt, outline } from './geometry/body.ts';
 import { um } from './geometry/centreline.ts';
 import { line, meet, nearest, pointAt, tangentAt } from './geometry/curve.ts';
+import { meetElements } from './geometry/packed.ts';
 import type { Place } from './read-graph-areas.ts';
 import type { Drawing } from './read-graph-drawing.ts';
 import type { Encounters } from './read-graph-joins.ts';
@@ -33,16 +34,14 @@ export function readOverlaps(
   findings: Finding[],
 ): void {
   if (found.overA.length === 0) return;
-  const total = drawing.bodies.length;
-  const met = new Set<number>();
-  for (let k = 0; k < found.metA.length; k++) met.add(found.metA[k]! * total + found.metB[k]!);
+  const total = drawing.elements.count;
   const over = new Map<number, number>();
   for (let k = 0; k < found.overA.length; k++) over.set(found.overA[k]! * total + found.overB[k]!, k);
   const seen = new Uint8Array(found.overA.length);
   const joins = marksOf(links);
   for (let k = 0; k < seen.length; k++) {
     if (seen[k]) continue;
-    const { stretch, explained } = flood(drawing, found, k, met, over, seen);
+    const { stretch, explained } = flood(drawing, found, k, over, seen);
     if (explained && stretch.a !== stretch.b) continue;
     measure(drawing, stretch, over);
     if (stretch.a === stretch.b && nearAlong(drawing, stretch)) continue;
@@ -56,14 +55,12 @@ function flood(
   drawing: Drawing,
   found: Encounters,
   start: number,
-  met: Set<number>,
   over: Map<number, number>,
   seen: Uint8Array,
 ): { stretch: Stretch; explained: boolean } {
-  const { bodies, first } = drawing;
-  const total = bodies.length;
-  const a = bodies[found.overA[start]!]!.element.channel;
-  const b = bodies[found.overB[start]!]!.element.channel;
+  const { first, channel, count: total } = drawing.elements;
+  const a = channel[found.overA[start]!]!;
+  const b = channel[found.overB[start]!]!;
   const stretch: Stretch = { a, b, inA: new Set(), inB: new Set(), points: [] };
   let explained = false;
   const queue = [start];
@@ -80,8 +77,12 @@ function flood(
         const q = j + dj;
         if (q < first[b]! || q >= first[b + 1]! || q <= p) continue;
         const key = p * total + q;
-        if (met.has(key)) explained = true;
         const next = over.get(key);
+        if (next === undefined && !explained) {
+          meetElements(drawing.elements, p, q, () => {
+            explained = true;
+          });
+        }
         if (next !== undefined && !seen[next]) {
           seen[next] = 1;
           queue.push(next);
@@ -94,12 +95,12 @@ function flood(
 
 /** Corners of the common ground of every pair of the stretch. */
 function measure(drawing: Drawing, stretch: Stretch, over: Map<number, number>): void {
-  const total = drawing.bodies.length;
+  const total = drawing.elements.count;
   for (const i of stretch.inA) {
     for (const j of stretch.inB) {
       if (!over.has(i * total + j)) continue;
-      const a = drawing.bodies[i]!;
-      const b = drawing.bodies[j]!;
+      const a = drawing.body(i);
+      const b = drawing.body(j);
       for (const [x, y] of commonCorners(a, b)) {
         const sa = a.element.s0 + nearest(a.element.curve, x, y);
         const sb = b.element.s0 + nearest(b.element.curve, x, y);
@@ -111,8 +112,8 @@ function measure(drawing: Drawing, stretch: Stretch, over: Map<number, number>):
   // areas that touch within the tolerance but have no corner in common: the nearest corners stand for it
   for (const i of stretch.inA) {
     for (const j of stretch.inB) {
-      const e = drawing.bodies[i]!.element;
-      const [x, y, sb] = closest(drawing.bodies[i]!, drawing.bodies[j]!);
+      const e = drawing.elements.at(i);
+      const [x, y, sb] = closest(drawing.body(i), drawing.body(j));
       stretch.points.push({ x, y, sa: e.s0 + nearest(e.curve, x, y), sb });
     }
   }
@@ -156,7 +157,7 @@ function nearAlong(drawing: Drawing, stretch: Stretch): boolean {
 
 function halfOn(drawing: Drawing, elements: Set<number>, s: number): number {
   for (const i of elements) {
-    const e = drawing.bodies[i]!.element;
+    const e = drawing.elements.at(i);
     if (s >= e.s0 && s <= e.s1) return halfAt(e, s);
   }
   return 0;
@@ -175,7 +176,7 @@ function marksOf(links: Links): Marks {
     if (list) list.push(mark);
     else map.set(key, [mark]);
   };
-  for (let m = 0; m < links.node.length; m++) {
+  for (let m = 0; m < links.marks; m++) {
     add(byChannel, links.channel[m]!, m);
     add(byNode, links.root(links.node[m]!), m);
   }
@@ -239,7 +240,7 @@ function away(links: Links, node: number, q: { x: number; y: number }): number {
 function halfWidest(drawing: Drawing, stretch: Stretch): number {
   let half = 0;
   for (const i of [...stretch.inA, ...stretch.inB]) {
-    const e = drawing.bodies[i]!.element;
+    const e = drawing.elements.at(i);
     half = Math.max(half, e.h0, e.h1);
   }
   return half;
@@ -255,7 +256,7 @@ interface Joined {
 
 /** Joins every end of one channel that lies in the other. */
 function joinEnds(drawing: Drawing, links: Links, stretch: Stretch, findings: Finding[]): Joined[] {
-  const { first } = drawing;
+  const { first } = drawing.elements;
   const { a, b, inA, inB } = stretch;
   const candidates: [number, Set<number>, boolean][] = [];
   if (inA.has(first[a]!)) candidates.push([first[a]!, inB, false]);
@@ -265,18 +266,18 @@ function joinEnds(drawing: Drawing, links: Links, stretch: Stretch, findings: Fi
   const joined: Joined[] = [];
   const reach = 4 * halfWidest(drawing, stretch);
   for (const [element, others, atEnd] of candidates) {
-    const e = drawing.bodies[element]!.element;
+    const e = drawing.elements.at(element);
     const end = atEnd ? e.s1 : e.s0;
     // where two ends face each other, the join of the one serves the other
     if (joined.some((k) => k.other === e.channel && Math.abs(k.t - end) <= reach)) continue;
-    const target = [...others].filter((j) => endIn(drawing, element, atEnd, drawing.bodies[j]!));
+    const target = [...others].filter((j) => endIn(drawing, element, atEnd, drawing.body(j)));
     if (target.length > 0) joined.push(joinEnd(drawing, links, element, atEnd, target, findings));
   }
   return joined;
 }
 
 function endIn(drawing: Drawing, element: number, atEnd: boolean, other: Body): boolean {
-  const [ax, ay, bx, by] = endCorners(drawing.bodies[element]!.element, atEnd);
+  const [ax, ay, bx, by] = endCorners(drawing.elements.at(element), atEnd);
   if (covers(other, ax, ay) || covers(other, bx, by)) return true;
   let hit = false;
   const edge = line(ax, ay, bx, by);
@@ -296,8 +297,8 @@ function joinEnd(
   target: readonly number[],
   findings: Finding[],
 ): Joined {
-  const e = drawing.bodies[element]!.element;
-  const length = drawing.lines[e.channel]!.length;
+  const e = drawing.elements.at(element);
+  const length = drawing.elements.total(e.channel);
   const store = atEnd ? links.tail : links.head;
   const known = store.get(e.channel);
   const [x, y] = known ? [known.x, known.y] : atEnd ? [e.curve.x1, e.curve.y1] : [e.curve.x0, e.curve.y0];
@@ -306,7 +307,7 @@ function joinEnd(
   if (!known) {
     const [ux, uy] = atEnd ? tangentAt(e.curve, e.curve.length) : [-e.curve.ux, -e.curve.uy];
     for (const j of target) {
-      const o = drawing.bodies[j]!.element;
+      const o = drawing.elements.at(j);
       const reach = 2 * (Math.max(e.h0, e.h1) + Math.max(o.h0, o.h1));
       meet(line(x, y, x + ux * reach, y + uy * reach), o.curve, (s, d) => {
         if (s >= best) return;
@@ -317,7 +318,7 @@ function joinEnd(
   }
   if (best === Infinity) {
     for (const j of target) {
-      const { curve } = drawing.bodies[j]!.element;
+      const { curve } = drawing.elements.at(j);
       const d = nearest(curve, x, y);
       const [px, py] = pointAt(curve, d);
       const off = Math.hypot(px - x, py - y);
@@ -326,7 +327,7 @@ function joinEnd(
       place = { x: px, y: py, element: j, d };
     }
   }
-  const other = drawing.bodies[place.element]!.element;
+  const other = drawing.elements.at(place.element);
   const along = known?.length ?? best;
   if (!known) store.set(e.channel, { x: place.x, y: place.y, length: best });
   const node = links.addNode(place.x, place.y);

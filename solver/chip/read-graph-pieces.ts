@@ -1,6 +1,7 @@
 import type { Finding } from '../problem/finding.ts';
 import { um } from './geometry/centreline.ts';
 import { curve, pointAt } from './geometry/curve.ts';
+import { CURVATURE, S0, S1, STRIDE, UX, UY, X0, X1, Y0, Y1 } from './geometry/elements.ts';
 import { TOUCH } from './geometry/tolerance.ts';
 import type { Piece } from './graph.ts';
 import type { Drawing } from './read-graph-drawing.ts';
@@ -16,7 +17,7 @@ export function readPieces(
   pieces: Piece[],
 ): void {
   const spec = drawing.chip.channels[channel]!;
-  const { length: total } = drawing.lines[channel]!;
+  const total = drawing.elements.total(channel);
   const slope = (spec.width[1] - spec.width[0]) / total;
   const width = (s: number) => spec.width[0] + slope * Math.min(Math.max(s, 0), total);
   let number = 0;
@@ -124,25 +125,47 @@ export function pathBetween(
   from: number,
   to: number,
 ): readonly Vertex[] {
-  const { elements, length } = drawing.lines[channel]!;
+  const { elements } = drawing;
+  const { data: d, first } = elements;
   const path: Vertex[] = [];
   if (from < 0) {
     const { x, y } = links.head.get(channel)!;
     path.push({ x, y, bulge: 0 });
   }
-  let end: [number, number] | undefined;
-  for (const e of elements) {
-    const low = Math.max(from, e.s0);
-    const high = Math.min(to, e.s1);
+  const last = first[channel + 1]! - 1;
+  let endX = 0;
+  let endY = 0;
+  for (let id = from <= 0 ? first[channel]! : drawing.elementAt(channel, from); id <= last; id++) {
+    const k = id * STRIDE;
+    const s0 = d[k + S0]!;
+    const s1 = d[k + S1]!;
+    if (s0 >= to) break;
+    const low = Math.max(from, s0);
+    const high = Math.min(to, s1);
     if (high <= low) continue;
-    const c = e.curve;
-    const [x, y] = low === e.s0 ? [c.x0, c.y0] : pointAt(c, low - e.s0);
-    const whole = low === e.s0 && high === e.s1;
-    path.push({ x, y, bulge: c.bulge === 0 || whole ? c.bulge : Math.tan((c.curvature * (high - low)) / 4) });
-    end = high === e.s1 ? [c.x1, c.y1] : pointAt(c, high - e.s0);
+    const curvature = d[k + CURVATURE]!;
+    if (curvature !== 0) {
+      const c = elements.curve(id);
+      const [x, y] = low === s0 ? [c.x0, c.y0] : pointAt(c, low - s0);
+      const whole = low === s0 && high === s1;
+      path.push({ x, y, bulge: whole ? c.bulge : Math.tan((curvature * (high - low)) / 4) });
+      [endX, endY] = high === s1 ? [c.x1, c.y1] : pointAt(c, high - s0);
+      continue;
+    }
+    const ux = d[k + UX]!;
+    const uy = d[k + UY]!;
+    const x0 = d[k + X0]!;
+    const y0 = d[k + Y0]!;
+    path.push(
+      low === s0
+        ? { x: x0, y: y0, bulge: 0 }
+        : { x: x0 + ux * (low - s0), y: y0 + uy * (low - s0), bulge: 0 },
+    );
+    endX = high === s1 ? d[k + X1]! : x0 + ux * (high - s0);
+    endY = high === s1 ? d[k + Y1]! : y0 + uy * (high - s0);
   }
-  if (end) path.push({ x: end[0], y: end[1], bulge: 0 });
-  if (to > length) {
+  if (to > 0 && from < elements.total(channel)) path.push({ x: endX, y: endY, bulge: 0 });
+  if (to > elements.total(channel)) {
     const { x, y } = links.tail.get(channel)!;
     path.push({ x, y, bulge: 0 });
   }

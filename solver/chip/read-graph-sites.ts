@@ -20,7 +20,7 @@ export interface SiteDraft {
   readonly name: string;
   readonly kind: SiteKind;
   readonly at: Point;
-  readonly layers: Set<string>;
+  readonly layers: string[];
   readonly chambers: string[];
   readonly ports: string[];
   readonly vias: string[];
@@ -33,7 +33,7 @@ interface Ordered {
 }
 
 function orderMarks(links: Links, channels: number): Ordered {
-  const count = links.node.length;
+  const count = links.marks;
   const start = new Int32Array(channels + 1);
   for (let m = 0; m < count; m++) start[links.channel[m]! + 1]!++;
   for (let c = 0; c < channels; c++) start[c + 1]! += start[c]!;
@@ -44,8 +44,22 @@ function orderMarks(links: Links, channels: number): Ordered {
   for (let c = 0; c < channels; c++) {
     const from = start[c]!;
     const to = start[c + 1]!;
-    if (to - from > 1) {
+    // nearly in order already for most channels; long lists go to the library's sort
+    if (to - from > 32) {
       order.subarray(from, to).sort((p, q) => low[p]! - low[q]! || high[p]! - high[q]! || p - q);
+      continue;
+    }
+    for (let i = from + 1; i < to; i++) {
+      const m = order[i]!;
+      let j = i - 1;
+      while (
+        j >= from &&
+        (low[order[j]!]! > low[m]! || (low[order[j]!] === low[m] && high[order[j]!]! > high[m]!))
+      ) {
+        order[j + 1] = order[j]!;
+        j--;
+      }
+      order[j + 1] = m;
     }
   }
   return { start, order };
@@ -68,7 +82,7 @@ export function readSites(
   links: Links,
   places: Places,
 ): { drafts: SiteDraft[]; holds: Hold[][]; portSite: Int32Array } {
-  const { chip, lines } = drawing;
+  const { chip, elements } = drawing;
   const channels = chip.channels.length;
   const { start, order } = orderMarks(links, channels);
   for (let c = 0; c < channels; c++) {
@@ -76,7 +90,7 @@ export function readSites(
     for (let k = start[c]! + 1; k < start[c + 1]!; k++) {
       const a = order[reach]!;
       const b = order[k]!;
-      if (onePlace(links, lines[c]!.length, a, b, links.low[b]! - links.high[a]!)) {
+      if (onePlace(links, elements.total(c), a, b, links.low[b]! - links.high[a]!)) {
         links.unite(links.node[a]!, links.node[b]!);
       }
       if (links.high[b]! > links.high[a]!) reach = k;
@@ -85,7 +99,7 @@ export function readSites(
   const labels = new Labels(chip, links, places);
   const holds: Hold[][] = [];
   for (let c = 0; c < channels; c++) {
-    const { length } = lines[c]!;
+    const length = elements.total(c);
     const list: Hold[] = [];
     const from = links.head.has(c) ? -links.head.get(c)!.length : 0;
     const to = length + (links.tail.get(c)?.length ?? 0);
@@ -123,7 +137,7 @@ export function readSites(
     holds.push(list);
   }
   labels.rest();
-  const portSite = Int32Array.from(places.ports, (node) => labels.siteOf.get(links.root(node))!);
+  const portSite = Int32Array.from(places.ports, (node) => labels.siteOf[links.root(node)]!);
   return { drafts: labels.drafts, holds, portSite };
 }
 
@@ -139,14 +153,13 @@ function stub(
   hold: number,
 ): boolean {
   if (Math.abs(end - hold) > 2 * links.stout[root]!) return false;
-  const bodies = drawing.bodies;
-  const e = bodies[end <= hold ? drawing.first[channel]! : drawing.first[channel + 1]! - 1]!.element;
-  const [x, y] = end <= hold ? [e.curve.x0, e.curve.y0] : [e.curve.x1, e.curve.y1];
+  const { first, channel: channelOf } = drawing.elements;
+  const { curve } = drawing.elements.at(end <= hold ? first[channel]! : first[channel + 1]! - 1);
+  const [x, y] = end <= hold ? [curve.x0, curve.y0] : [curve.x1, curve.y1];
   for (const j of drawing.index!.search(x, y, x, y)) {
-    const b = bodies[j]!;
-    const other = b.element.channel;
-    if (other === channel || drawing.layerOf[other] !== drawing.layerOf[channel] || !covers(b, x, y))
-      continue;
+    const other = channelOf[j]!;
+    if (other === channel || drawing.layerOf[other] !== drawing.layerOf[channel]) continue;
+    if (!covers(drawing.body(j), x, y)) continue;
     for (let k = start[other]!; k < start[other + 1]!; k++) {
       if (links.root(links.node[order[k]!]!) === root) return true;
     }
@@ -154,10 +167,15 @@ function stub(
   return false;
 }
 
+function addLayer(draft: SiteDraft, layer: string): void {
+  if (!draft.layers.includes(layer)) draft.layers.push(layer);
+}
+
 /** Names sites as they are first met, channel by channel. */
 class Labels {
   readonly drafts: SiteDraft[] = [];
-  readonly siteOf = new Map<number, number>();
+  /** Site of a root node, -1 where it has none yet. */
+  readonly siteOf: Int32Array;
   readonly #links: Links;
   readonly #chip: Chip;
   readonly #special = new Map<number, { chambers: number[]; vias: number[]; ports: number[] }>();
@@ -165,6 +183,7 @@ class Labels {
   #ends = 0;
 
   constructor(chip: Chip, links: Links, places: Places) {
+    this.siteOf = new Int32Array(links.nodes).fill(-1);
     this.#links = links;
     this.#chip = chip;
     for (const kind of ['chambers', 'vias', 'ports'] as const) {
@@ -178,13 +197,13 @@ class Labels {
   }
 
   site(root: number, layer: string): number {
-    const known = this.siteOf.get(root);
-    if (known !== undefined) {
-      this.drafts[known]!.layers.add(layer);
+    const known = this.siteOf[root]!;
+    if (known >= 0) {
+      addLayer(this.drafts[known]!, layer);
       return known;
     }
     const id = this.drafts.length;
-    this.siteOf.set(root, id);
+    this.siteOf[root] = id;
     const special = this.#special.get(root);
     if (special) this.drafts.push(this.#place(special));
     else {
@@ -194,13 +213,13 @@ class Labels {
         name: `junction:${this.#junctions}`,
         kind: 'junction',
         at: [this.#links.x[root]! / n, this.#links.y[root]! / n],
-        layers: new Set(),
+        layers: [],
         chambers: [],
         ports: [],
         vias: [],
       });
     }
-    this.drafts[id]!.layers.add(layer);
+    addLayer(this.drafts[id]!, layer);
     return id;
   }
 
@@ -214,7 +233,7 @@ class Labels {
     for (const v of vias) for (const l of v.layers) layers.add(l);
     for (const p of ports) layers.add(p.layer);
     const ids = {
-      layers,
+      layers: [...layers],
       chambers: chambers.map((c) => c.id),
       vias: vias.map((v) => v.id),
       ports: ports.map((p) => p.id),
@@ -229,15 +248,15 @@ class Labels {
 
   endHold(drawing: Drawing, channel: number, atEnd: boolean): Hold {
     this.#ends++;
-    const line = drawing.lines[channel]!;
-    const e = line.elements[atEnd ? line.elements.length - 1 : 0]!;
-    const s = atEnd ? line.length : 0;
+    const { elements } = drawing;
+    const c = elements.curve(atEnd ? elements.first[channel + 1]! - 1 : elements.first[channel]!);
+    const s = atEnd ? elements.total(channel) : 0;
     const site = this.drafts.length;
     this.drafts.push({
       name: `end:${this.#ends}`,
       kind: 'end',
-      at: atEnd ? [e.curve.x1, e.curve.y1] : [e.curve.x0, e.curve.y0],
-      layers: new Set([this.#chip.channels[channel]!.layer]),
+      at: atEnd ? [c.x1, c.y1] : [c.x0, c.y0],
+      layers: [this.#chip.channels[channel]!.layer],
       chambers: [],
       ports: [],
       vias: [],
@@ -248,8 +267,8 @@ class Labels {
   /** Places that no channel leads to. */
   rest(): void {
     for (const [root, special] of this.#special) {
-      if (this.siteOf.has(root)) continue;
-      this.siteOf.set(root, this.drafts.length);
+      if (this.siteOf[root]! >= 0) continue;
+      this.siteOf[root] = this.drafts.length;
       this.drafts.push(this.#place(special));
     }
   }

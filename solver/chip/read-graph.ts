@@ -2,7 +2,7 @@ import type { Finding } from '../problem/finding.ts';
 import type { Chip } from './chip.ts';
 import type { Graph, Piece, Site } from './graph.ts';
 import { readPlaces } from './read-graph-areas.ts';
-import { readDrawing } from './read-graph-drawing.ts';
+import { Drawing } from './read-graph-drawing.ts';
 import { joinChannels } from './read-graph-joins.ts';
 import { Links } from './read-graph-links.ts';
 import { readOverlaps } from './read-graph-overlaps.ts';
@@ -15,8 +15,8 @@ import { readSites } from './read-graph-sites.ts';
  */
 export function readGraph(chip: Chip): Graph {
   const findings: Finding[] = [];
-  const links = new Links();
-  const drawing = readDrawing(chip, findings);
+  const drawing = new Drawing(chip, findings);
+  const links = new Links(4 * chip.channels.length);
   const encounters = joinChannels(drawing, links);
   const places = readPlaces(drawing, links, findings);
   readOverlaps(drawing, links, encounters, places.areas, findings);
@@ -33,16 +33,13 @@ export function readGraph(chip: Chip): Graph {
   };
 }
 
-function sitesWithArms(
-  drafts: readonly (Omit<Site, 'arms' | 'layers'> & { layers: Set<string> })[],
-  pieces: readonly Piece[],
-): Site[] {
+function sitesWithArms(drafts: readonly Omit<Site, 'arms'>[], pieces: readonly Piece[]): Site[] {
   const arms: { piece: number; end: 'from' | 'to' }[][] = drafts.map(() => []);
   pieces.forEach((piece, i) => {
     arms[piece.from]!.push({ piece: i, end: 'from' });
     arms[piece.to]!.push({ piece: i, end: 'to' });
   });
-  return drafts.map((draft, i) => ({ ...draft, layers: [...draft.layers], arms: arms[i]! }));
+  return drafts.map((draft, i) => ({ ...draft, arms: arms[i]! }));
 }
 
 /** Number of the connected part of each site, in order of first sites. */

@@ -19,78 +19,6 @@ export interface Body {
   readonly corners: readonly number[];
 }
 
-export function body(e: Element): Body {
-  const c = e.curve;
-  if (c.curvature !== 0) return arcBody(e);
-  const corners: number[] = [];
-  const { ux, uy } = c;
-  // right side forth, left side back
-  const right0 = e.turn0 > 0 ? mitre(e.turn0) * e.h0 : 0;
-  const right1 = e.turn1 > 0 ? mitre(e.turn1) * e.h1 : 0;
-  const left1 = e.turn1 < 0 ? mitre(-e.turn1) * e.h1 : 0;
-  const left0 = e.turn0 < 0 ? mitre(-e.turn0) * e.h0 : 0;
-  corners.push(c.x0 + uy * e.h0 - ux * right0, c.y0 - ux * e.h0 - uy * right0);
-  corners.push(c.x1 + uy * e.h1 + ux * right1, c.y1 - ux * e.h1 + uy * right1);
-  if (Math.abs(e.turn1) > MITRE_TURN) bevel(corners, c.x1, c.y1, ux, uy, e.h1, e.turn1);
-  corners.push(c.x1 - uy * e.h1 + ux * left1, c.y1 + ux * e.h1 + uy * left1);
-  corners.push(c.x0 - uy * e.h0 - ux * left0, c.y0 + ux * e.h0 - uy * left0);
-  if (Math.abs(e.turn0) > MITRE_TURN) bevel(corners, c.x0, c.y0, -ux, -uy, e.h0, -e.turn0);
-  let minX = Infinity;
-  let minY = Infinity;
-  let maxX = -Infinity;
-  let maxY = -Infinity;
-  for (let i = 0; i < corners.length; i += 2) {
-    const x = corners[i]!;
-    const y = corners[i + 1]!;
-    if (x < minX) minX = x;
-    if (x > maxX) maxX = x;
-    if (y < minY) minY = y;
-    if (y > maxY) maxY = y;
-  }
-  return { element: e, minX, minY, maxX, maxY, corners };
-}
-
-/** How far the mitred corner goes on along the side, in half widths. */
-function mitre(turn: number): number {
-  return turn > MITRE_TURN ? 0 : Math.tan(turn / 2);
-}
-
-/** Middle of the bevel's edge, which the elements on both sides share. */
-function bevel(
-  corners: number[],
-  x: number,
-  y: number,
-  ux: number,
-  uy: number,
-  half: number,
-  turn: number,
-): void {
-  const a = turn / 2 - Math.sign(turn) * (Math.PI / 2);
-  const reach = half * Math.cos(turn / 2);
-  corners.push(
-    x + reach * (ux * Math.cos(a) - uy * Math.sin(a)),
-    y + reach * (uy * Math.cos(a) + ux * Math.sin(a)),
-  );
-}
-
-function arcBody(e: Element): Body {
-  const c = e.curve;
-  const h = Math.max(e.h0, e.h1);
-  const sweep = Math.abs(c.curvature * c.length);
-  let minX = Math.min(c.x0, c.x1);
-  let maxX = Math.max(c.x0, c.x1);
-  let minY = Math.min(c.y0, c.y1);
-  let maxY = Math.max(c.y0, c.y1);
-  // an arc rises at most its sagitta (or its radius) above the chord
-  const rise =
-    sweep < Math.PI ? (1 - Math.cos(sweep / 2)) / Math.abs(c.curvature) : 2 / Math.abs(c.curvature);
-  minX -= rise + h;
-  minY -= rise + h;
-  maxX += rise + h;
-  maxY += rise + h;
-  return { element: e, minX, minY, maxX, maxY, corners: [] };
-}
-
 /** Edges of the covered area, counter-clockwise. */
 export function outline(b: Body): Curve[] {
   const n = b.corners.length;
@@ -192,24 +120,6 @@ function inSegment(e: Curve, x: number, y: number): boolean {
   return e.curvature > 0 ? side < 0 : side > 0;
 }
 
-/** Whether the covered areas of two elements overlap or touch, to TOUCH. */
-export function overlap(a: Body, b: Body): boolean {
-  if (
-    a.minX > b.maxX + TOUCH ||
-    b.minX > a.maxX + TOUCH ||
-    a.minY > b.maxY + TOUCH ||
-    b.minY > a.maxY + TOUCH
-  ) {
-    return false;
-  }
-  if (a.corners.length > 0 && b.corners.length > 0) {
-    return !apart(a.corners, b.corners) && !apart(b.corners, a.corners);
-  }
-  const ea = outline(a);
-  const eb = outline(b);
-  return loopsOverlap(ea, eb);
-}
-
 /** Whether two closed loops touch, cross, or one lies within the other. */
 export function loopsOverlap(ea: readonly Curve[], eb: readonly Curve[]): boolean {
   let hit = false;
@@ -222,25 +132,6 @@ export function loopsOverlap(ea: readonly Curve[], eb: readonly Curve[]): boolea
     }
   }
   return inLoop(ea, eb[0]!.x0, eb[0]!.y0) || inLoop(eb, ea[0]!.x0, ea[0]!.y0);
-}
-
-/** Whether an edge of convex p has all of q beyond it by more than TOUCH. */
-function apart(p: readonly number[], q: readonly number[]): boolean {
-  for (let i = 0; i < p.length; i += 2) {
-    const j = i + 2 === p.length ? 0 : i + 2;
-    const dx = p[j]! - p[i]!;
-    const dy = p[j + 1]! - p[i + 1]!;
-    const limit = -TOUCH * Math.sqrt(dx * dx + dy * dy);
-    let beyond = true;
-    for (let k = 0; k < q.length; k += 2) {
-      if (dx * (q[k + 1]! - p[i + 1]!) - dy * (q[k]! - p[i]!) >= limit) {
-        beyond = false;
-        break;
-      }
-    }
-    if (beyond) return true;
-  }
-  return false;
 }
 
 /** The two corners of the square end at the start or the end of an element. */

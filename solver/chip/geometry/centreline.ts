@@ -1,6 +1,27 @@
 import type { Finding } from '../../problem/finding.ts';
 import type { Channel, Point } from '../chip.ts';
 import { type Curve, curve, line } from './curve.ts';
+import {
+  BULGE,
+  CURVATURE,
+  CX,
+  CY,
+  type Elements,
+  H0,
+  H1,
+  LENGTH,
+  S0,
+  S1,
+  STRIDE,
+  TURN0,
+  TURN1,
+  UX,
+  UY,
+  X0,
+  X1,
+  Y0,
+  Y1,
+} from './elements.ts';
 
 /** One straight or round stretch of a channel: its centreline, where it lies along the channel, and its half widths. */
 export interface Element {
@@ -20,53 +41,100 @@ export interface Element {
   readonly turn1: number;
 }
 
-export interface Centreline {
-  readonly elements: readonly Element[];
-  /** nm */
-  readonly length: number;
-}
-
 /** Tapered arcs are cut into pieces no longer than this, so that their edges are arcs to 1e-4 of the change in width. */
 const TAPERED_ARC = Math.PI / 12;
 /** A corner flatter than this (radians) is drawn straight through, however the bend radius stands. */
 const STRAIGHT = 1e-9;
 
-/** The centreline of a channel with its rounded bends; radii that do not fit are taken as large as they can be. */
-export function centreline(channel: Channel, index: number, findings: Finding[]): Centreline {
+/**
+ * Adds the centreline of a channel, with its rounded bends, to `elements`; radii that do not fit are
+ * taken as large as they can be, with a finding.
+ */
+export function addCentreline(
+  elements: Elements,
+  channel: Channel,
+  index: number,
+  findings: Finding[],
+): void {
+  const start = elements.count;
   const points = distinct(channel.path);
-  const count = points.length;
-  const curves: Curve[] = [];
-  if (channel.bendRadius > 0 && count > 2) rounded(channel, points, curves, findings);
-  else for (let i = 1; i < count; i++) curves.push(between(points[i - 1]!, points[i]!));
-  let length = 0;
-  for (const c of curves) length += c.length;
   const tapered = channel.width[0] !== channel.width[1];
-  const parts = tapered ? curves.flatMap(split) : curves;
+  if (channel.bendRadius > 0 && points.length > 2) {
+    const curves: Curve[] = [];
+    rounded(channel, points, curves, findings);
+    for (const c of curves) {
+      if (tapered && c.curvature !== 0) for (const part of split(c)) addCurve(elements, index, part);
+      else addCurve(elements, index, c);
+    }
+  } else {
+    for (let i = 1; i < points.length; i++) {
+      const p = points[i - 1]!;
+      const q = points[i]!;
+      addLine(elements, index, p[0], p[1], q[0], q[1]);
+    }
+  }
+  elements.first[index + 1] = elements.count;
+  const d = elements.data;
+  let length = 0;
+  for (let id = start; id < elements.count; id++) length += d[id * STRIDE + LENGTH]!;
   const half = channel.width[0] / 2;
   const slope = (channel.width[1] - channel.width[0]) / 2 / length;
-  const elements: Element[] = [];
   let s = 0;
-  let turn = 0;
-  for (let i = 0; i < parts.length; i++) {
-    const c = parts[i]!;
-    const next = i + 1 < parts.length ? parts[i + 1]! : undefined;
-    const turn1 = next && c.curvature === 0 && next.curvature === 0 ? turnBetween(c, next) : 0;
-    const s1 = s + c.length;
-    elements.push({
-      channel: index,
-      index: i,
-      curve: c,
-      s0: s,
-      s1,
-      h0: half + slope * s,
-      h1: half + slope * s1,
-      turn0: turn,
-      turn1,
-    });
-    s = s1;
-    turn = turn1;
+  for (let id = start; id < elements.count; id++) {
+    const k = id * STRIDE;
+    d[k + S0] = s;
+    d[k + H0] = half + slope * s;
+    s += d[k + LENGTH]!;
+    d[k + S1] = s;
+    d[k + H1] = half + slope * s;
+    d[k + TURN0] = 0;
+    d[k + TURN1] = 0;
+    const before = k - STRIDE;
+    if (id > start && d[k + CURVATURE] === 0 && d[before + CURVATURE] === 0) {
+      const ax = d[before + UX]!;
+      const ay = d[before + UY]!;
+      const bx = d[k + UX]!;
+      const by = d[k + UY]!;
+      const turn = Math.atan2(ax * by - ay * bx, ax * bx + ay * by);
+      d[before + TURN1] = turn;
+      d[k + TURN0] = turn;
+    }
   }
-  return { elements, length };
+}
+
+function addLine(elements: Elements, channel: number, x0: number, y0: number, x1: number, y1: number): void {
+  const k = elements.add(channel);
+  const d = elements.data;
+  const dx = x1 - x0;
+  const dy = y1 - y0;
+  const length = Math.sqrt(dx * dx + dy * dy);
+  d[k + X0] = x0;
+  d[k + Y0] = y0;
+  d[k + X1] = x1;
+  d[k + Y1] = y1;
+  d[k + UX] = dx / length;
+  d[k + UY] = dy / length;
+  d[k + LENGTH] = length;
+  d[k + BULGE] = 0;
+  d[k + CURVATURE] = 0;
+  d[k + CX] = x0;
+  d[k + CY] = y0;
+}
+
+function addCurve(elements: Elements, channel: number, c: Curve): void {
+  const k = elements.add(channel);
+  const d = elements.data;
+  d[k + X0] = c.x0;
+  d[k + Y0] = c.y0;
+  d[k + X1] = c.x1;
+  d[k + Y1] = c.y1;
+  d[k + UX] = c.ux;
+  d[k + UY] = c.uy;
+  d[k + LENGTH] = c.length;
+  d[k + BULGE] = c.bulge;
+  d[k + CURVATURE] = c.curvature;
+  d[k + CX] = c.cx;
+  d[k + CY] = c.cy;
 }
 
 function distinct(path: readonly Point[]): readonly Point[] {
