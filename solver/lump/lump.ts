@@ -1,6 +1,7 @@
 import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
 import type { Drive, NetworkSpec } from '../network/spec.ts';
+import type { Profile } from '../section/profile.ts';
 import { driveOf } from './drives.ts';
 import { type Duct, ductOf } from './duct.ts';
 import { depthOf, idealStretches, type Stretch } from './stretches.ts';
@@ -62,11 +63,23 @@ export function lump(
 function stretchDuct(chip: Chip, graph: Graph, stretch: Stretch, memory: DuctMemory): Duct {
   const piece = graph.pieces[stretch.piece];
   const layer = chip.layers[piece.layerIndex];
-  const key = `${JSON.stringify(layer.profile)} ${layer.depth} ${stretch.width[0]} ${stretch.width[1]}`;
+  const key = `${profileKey(layer.profile)} ${layer.depth} ${stretch.width[0]} ${stretch.width[1]}`;
   let duct = memory.get(key);
   if (!duct) {
     duct = ductOf(layer.profile, stretch.width, depthOf(chip, piece.layerIndex), piece.channel);
     memory.set(key, duct);
   }
   return duct;
+}
+
+const profileKeys = new WeakMap<Profile, string>();
+
+/** A measured polygon may have thousands of points: its text is made once. */
+function profileKey(profile: Profile): string {
+  let key = profileKeys.get(profile);
+  if (key === undefined) {
+    key = JSON.stringify(profile);
+    profileKeys.set(profile, key);
+  }
+  return key;
 }

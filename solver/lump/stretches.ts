@@ -17,7 +17,8 @@ export interface Stretch {
   readonly width: readonly [number, number];
 }
 
-export const NANOMETRE = 1e-9;
+/** In a metre; dividing by it rounds once, which multiplying by 1e-9 does not. */
+export const NANOMETRES = 1e9;
 
 /**
  * Ideal junctions: every site is one node at one pressure, every piece one stretch. A piece that lies
@@ -31,12 +32,12 @@ export function idealStretches(graph: Graph): Stretch[] {
     to: piece.to,
     fromName: graph.sites[piece.from]!.name,
     toName: graph.sites[piece.to]!.name,
-    length: Math.max(piece.length, 1) * NANOMETRE,
-    width: [piece.width[0] * NANOMETRE, piece.width[1] * NANOMETRE],
+    length: Math.max(piece.length, 1) / NANOMETRES,
+    width: [piece.width[0] / NANOMETRES, piece.width[1] / NANOMETRES],
   }));
 }
 
 /** Depth of a layer in metres. */
 export function depthOf(chip: Chip, layerIndex: number): number {
-  return chip.layers[layerIndex]!.depth * NANOMETRE;
+  return chip.layers[layerIndex]!.depth / NANOMETRES;
 }

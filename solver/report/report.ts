@@ -4,7 +4,7 @@ import type { CellResult, ChannelResult, PieceResult, PortResult, Result } from 
 import { ductsBetween } from '../exposure/reach.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { NANOMETRE } from '../lump/stretches.ts';
+import { NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
 import { limitResults } from './limits.ts';
@@ -129,7 +129,7 @@ function idealNote(graph: Graph): Finding[] {
       where: first.name,
       says: `${junctions === 1 ? 'The junction is' : `All ${junctions} junctions are`} taken as ideal: one pressure each, channels counted to the crossing of their centrelines.`,
       do: 'Solve the junctions for compact networks, where this can be off by tens of per cent.',
-      at: [first.at[0] * NANOMETRE, first.at[1] * NANOMETRE],
+      at: [first.at[0] / NANOMETRES, first.at[1] / NANOMETRES],
     },
   ];
 }
