@@ -1,5 +1,5 @@
 import { BOUNDS } from './bounds.ts';
-import type { Chip, Layer } from './chip.ts';
+import type { Chamber, Channel, Chip, Layer, Port, Via } from './chip.ts';
 import {
   checkChamber,
   checkChannel,
@@ -15,6 +15,13 @@ import { nearest } from './schema-nearest.ts';
 /** The lists of a chip whose entries bear ids. */
 export const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports'] as const;
 export type ListName = (typeof LISTS)[number];
+export interface PartOf {
+  readonly layers: Layer;
+  readonly channels: Channel;
+  readonly chambers: Chamber;
+  readonly vias: Via;
+  readonly ports: Port;
+}
 
 /** Cross-sections that have a shape only together with a width, so that no chamber can have them. */
 const NEEDS_WIDTH: ReadonlySet<string> = new Set(['circle', 'ellipse', 'triangle', 'polygon']);
@@ -128,50 +135,74 @@ function checkTerms(chip: Chip, others: ReadonlyMap<string, ListName>): void {
   });
 }
 
-/**
- * Throws a `Fault` at the first thing that makes a chip no chip: everything that needs no geometry.
- * `touched` says which parts to look at by themselves, where the others are known to be sound; ids and
- * references are always gone through whole.
- */
-export function checkChip(chip: Chip, touched: (part: object) => boolean = () => true): void {
-  checkCounts(chip);
-  for (const key of ['width', 'height'] as const) {
-    if (!(chip.outline[key] > 0)) {
-      throw new Fault('range', 'must be above zero.', 'Give the size of the chip.', ['outline', key]);
-    }
-  }
-  if (touched(chip.fluid)) at(['fluid'], () => checkFluid(chip.fluid));
-  const { layers, others } = byId(chip);
-  const layerAt = (id: string, ...path: Path): Layer => {
-    const layer = layers.get(id);
-    if (layer === undefined) throw unknownId(id, 'layer', layers.keys(), path);
-    return layer;
-  };
-  each('layers', chip.layers, (layer) => {
-    if (touched(layer)) checkLayer(layer);
-  });
-  each('channels', chip.channels, (channel) => {
+type LayerAt = (id: string, ...path: Path) => Layer;
+
+/** What must hold of each part by itself and on its layer; `fresh` is false where it is known to be sound itself. */
+const CHECKS: { readonly [L in ListName]: (part: PartOf[L], layerAt: LayerAt, fresh: boolean) => void } = {
+  layers: (layer, _, fresh) => {
+    if (fresh) checkLayer(layer);
+  },
+  channels: (channel, layerAt, fresh) => {
     const layer = layerAt(channel.layer, 'layer');
-    if (touched(channel)) checkChannel(channel);
-    if (touched(channel) || touched(layer)) checkOnLayer(channel, layer);
-  });
-  each('chambers', chip.chambers, (chamber) => {
+    if (fresh) checkChannel(channel);
+    checkOnLayer(channel, layer);
+  },
+  chambers: (chamber, layerAt, fresh) => {
     const layer = layerAt(chamber.layer, 'layer');
-    if (touched(chamber)) checkChamber(chamber);
+    if (fresh) checkChamber(chamber);
     if (!NEEDS_WIDTH.has(layer.profile.kind)) return;
     throw new Fault(
       'profile',
       `lies on layer ${quoted(layer.id)}, whose cross-section (${layer.profile.kind}) has no shape without a channel's width.`,
       'Put the chamber on a layer of profile "rectangle", "trapezoid" or "rounded".',
     );
-  });
-  each('vias', chip.vias, (via) => {
+  },
+  vias: (via, layerAt, fresh) => {
     for (const [j, id] of via.layers.entries()) layerAt(id, 'layers', j);
-    if (touched(via)) checkVia(via);
-  });
-  each('ports', chip.ports, (port) => {
+    if (fresh) checkVia(via);
+  },
+  ports: (port, layerAt, fresh) => {
     layerAt(port.layer, 'layer');
-    if (touched(port)) checkPort(port);
-  });
+    if (fresh) checkPort(port);
+  },
+};
+
+function finder(layers: ReadonlyMap<string, Layer>): LayerAt {
+  return (id, ...path) => {
+    const layer = layers.get(id);
+    if (layer === undefined) throw unknownId(id, 'layer', layers.keys(), path);
+    return layer;
+  };
+}
+
+/**
+ * Throws a `Fault` at the first thing that makes a chip no chip: everything that needs no geometry.
+ * `fresh` says which parts to look at by themselves, where the others are known to be sound; ids and
+ * references are always gone through whole.
+ */
+export function checkChip(chip: Chip, fresh: (part: object) => boolean = () => true): void {
+  checkCounts(chip);
+  for (const key of ['width', 'height'] as const) {
+    if (chip.outline[key] > 0) continue;
+    throw new Fault('range', 'must be above zero.', 'Give the size of the chip.', ['outline', key]);
+  }
+  if (fresh(chip.fluid)) at(['fluid'], () => checkFluid(chip.fluid));
+  const { layers, others } = byId(chip);
+  const layerAt = finder(layers);
+  const all = <L extends ListName>(list: L): void => {
+    each(list, chip[list] as readonly PartOf[L][], (part) => CHECKS[list](part, layerAt, fresh(part)));
+  };
+  LISTS.forEach(all);
   checkTerms(chip, others);
+}
+
+/** The same for an edit that put parts in the place of others of the same ids, and changed nothing else. */
+export function checkReplaced(chip: Chip, replaced: ReadonlyMap<ListName, readonly number[]>): void {
+  checkCounts(chip);
+  const layerAt = finder(new Map(chip.layers.map((layer) => [layer.id, layer])));
+  const some = <L extends ListName>(list: L, indices: readonly number[]): void => {
+    const parts = chip[list] as readonly PartOf[L][];
+    for (const index of indices) at([list, index], () => CHECKS[list](parts[index]!, layerAt, true));
+  };
+  for (const [list, indices] of replaced) some(list, indices);
 }

@@ -81,7 +81,7 @@ export function faultToProblem(fault: Fault, root: unknown, whole: string): Prob
   const last = fault.path.findLastIndex((key) => typeof key === 'string');
   const name = fault.path.length === 0 ? whole : pathText(fault.path.slice(Math.max(0, last)));
   const id = idAlong(root, fault.path);
-  const where = pathText(fault.path) + (id === undefined ? '' : ` (${shown(id)})`);
+  const where = pathText(fault.path) + (id === undefined || id.trim() === '' ? '' : ` (${shown(id)})`);
   return new Problem(fault.kind, `${name} ${fault.what}`, where, fault.remedy);
 }
 
