@@ -1,9 +1,11 @@
 import type { Chip } from '../solver/chip/chip.ts';
+import { applyEdit, type ChipEdit, makeEdit } from '../solver/chip/edit.ts';
+import { readEdit } from '../solver/chip/edit-read.ts';
 import type { Result } from '../solver/chip/result.ts';
+import { readChip } from '../solver/chip/schema-chip.ts';
 import { Problem } from '../solver/problem/problem.ts';
 import type { Content } from './check/content.ts';
-import { checkedChip } from './chip/checked.ts';
-import { applyEdit, type ChipEdit, invertEdit } from './chip/edits.ts';
+import { editBetween } from './chip/between.ts';
 import { chipHash } from './chip/parts.ts';
 import { type Folded, fold } from './journal/fold.ts';
 import { append, changesOf, NO_BODY, packChanges, readStep, type Step } from './journal/journal.ts';
@@ -82,11 +84,11 @@ export class Project {
         'Do it again on the chip as it stands.',
       );
     return this.#do(() => {
-      const next = applyEdit(this.#chip, edit);
-      const back = invertEdit(this.#chip, edit);
-      const body = packChanges({ forward: edit.changes, backward: back.changes });
-      this.#append({ kind: 'edit', of: null, label: edit.label, body });
-      this.#chip = next;
+      const checked = readEdit(edit);
+      const { chip, inverse } = makeEdit(this.#chip, checked);
+      const body = packChanges({ forward: checked.changes, backward: inverse.changes });
+      this.#append({ kind: 'edit', of: null, label: checked.label, body });
+      this.#chip = chip;
       return this.position;
     });
   }
@@ -106,9 +108,12 @@ export class Project {
     return [...undone, ...done.reverse()].slice(0, limit);
   }
 
-  /** The chip as it was when the project was opened. */
-  get openedAt(): Chip {
-    return this.#openedAt;
+  /** Goes back to the chip as it was when the project was opened, as one step. */
+  revert(): Moved {
+    const edit = editBetween(this.#chip, this.#openedAt, 'go back to how it was at opening');
+    if (edit.changes.length === 0)
+      throw new Problem('project', 'Nothing has changed since the project was opened.', '', 'Go on editing.');
+    return { ...this.edit(edit, this.#seq), edit };
   }
 
   listTrials(): Trial[] {
@@ -132,7 +137,7 @@ export class Project {
   getTrial(id: number): { trial: Trial; chip: Chip; result: Result | null } {
     return this.#do(() => {
       const found = getTrial(this.#store, id);
-      return { ...found, chip: checkedChip(found.chip) };
+      return { ...found, chip: readChip(found.chip) };
     }, false);
   }
 
@@ -175,6 +180,14 @@ export class Project {
     await this.#store.backup(path);
   }
 
+  stopBackup(): void {
+    this.#store.stopBackup();
+  }
+
+  get isOpen(): boolean {
+    return this.#store.isOpen;
+  }
+
   /** Settles and closes. What cannot be settled stays in the log, which the next opening reads. */
   close(): void {
     try {
@@ -188,10 +201,10 @@ export class Project {
     if (!mark) throw new Problem('project', `There is nothing to ${kind}.`, '', 'Go on editing.');
     return this.#do(() => {
       const { forward, backward } = changesOf(readStep(this.#store, mark.seq));
-      const edit = { label: mark.label, changes: kind === 'undo' ? backward : forward };
-      const next = applyEdit(this.#chip, edit);
+      const edit = readEdit({ label: mark.label, changes: kind === 'undo' ? backward : forward });
+      const chip = applyEdit(this.#chip, edit);
       this.#append({ kind, of: mark.seq, label: mark.label, body: NO_BODY });
-      this.#chip = next;
+      this.#chip = chip;
       return { ...this.position, edit };
     });
   }

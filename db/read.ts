@@ -3,9 +3,9 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { Chip } from '../solver/chip/chip.ts';
 import { Problem } from '../solver/problem/problem.ts';
-import { type Content, readContent } from './check/content.ts';
+import { type Content, checkStructure, readContent } from './check/content.ts';
 import { Damage } from './check/damage.ts';
-import { kindOfFile } from './layout/layout.ts';
+import { kindOfFile, migrate } from './layout/layout.ts';
 import { VERSION } from './layout/tables.ts';
 import { stepAsync } from './seam.ts';
 import { Store } from './store/store.ts';
@@ -89,12 +89,20 @@ export async function openInMemory(path: string): Promise<Store> {
   }
 }
 
-/** Runs `work` on the store; any failure that is not told yet is damage. */
-export function contentOf(store: Store): Content {
+/**
+ * The content of a store of layout `version`, which is brought up first where it is older. Throws
+ * `Damage` where it is not whole, a `Problem` where it is whole and makes no chip; failures of the disk
+ * pass as they are.
+ */
+export function contentOf(store: Store, version: number): Content {
   try {
+    checkStructure(store, version);
+    if (version < VERSION) migrate(store, version);
     return readContent(store);
   } catch (error) {
     if (error instanceof Problem || error instanceof Damage) throw error;
+    const code = String((error as { code?: unknown }).code ?? '');
+    if (/^SQLITE_(IOERR|BUSY|FULL|READONLY|NOMEM|CANTOPEN)/.test(code)) throw error;
     throw new Damage(['it cannot be read to its end']);
   }
 }
@@ -110,11 +118,11 @@ export function damagedProblem(damage: Damage, path: string): Problem {
 
 /** The chip of a project file as it stands, for reading only: the file and its folder are not written to. */
 export async function readProjectChip(path: string): Promise<Chip> {
-  await checkedVersion(path);
+  const version = await checkedVersion(path);
   try {
     const store = await openInMemory(path);
     try {
-      return contentOf(store).chip;
+      return contentOf(store, version).chip;
     } finally {
       store.close();
     }

@@ -1,13 +1,19 @@
-import { mkdir, rm, stat } from 'node:fs/promises';
-import { basename, dirname, join, resolve } from 'node:path';
+import { copyFile, stat } from 'node:fs/promises';
+import { basename, dirname, extname, join, resolve } from 'node:path';
 import type { Chip } from '../solver/chip/chip.ts';
 import { Problem } from '../solver/problem/problem.ts';
+import { Backups, backupTime } from './backup/backups.ts';
+import { chipHash } from './chip/parts.ts';
 import { makeFile } from './make.ts';
-import { openForReading, openForWork } from './open.ts';
-import { isLock, type Lock, markPath, type Opener, takeLock } from './place/lock.ts';
-import { moveOver, moveToFree, siblingOf, syncFile, writeProblem } from './place/replace.ts';
+import { type Opened, openPlace } from './open-place.ts';
+import { copyOut, removeFile } from './place/copy-out.ts';
+import { freeDraft } from './place/drafts.ts';
+import { inUse, type Mode } from './place/home.ts';
+import type { Place } from './place/judge.ts';
+import { isLock, takeLock } from './place/lock.ts';
+import { writeProblem } from './place/replace.ts';
 import type { Project } from './project.ts';
-import { readProjectChip } from './read.ts';
+import { projectProblem } from './words.ts';
 
 export interface WorkplaceSettings {
   /** Folder for drafts, private copies and backups. */
@@ -18,9 +24,9 @@ export interface WorkplaceSettings {
   readonly onChange: () => void;
   /** Something went wrong that no request waits for. */
   readonly onTrouble: (problem: Problem) => void;
+  /** Whether a place can be worked in directly; by default as `judgePlace` says. */
+  readonly judge?: (path: string) => Promise<Place>;
 }
-
-export type Mode = 'kept' | 'draft' | 'read-only' | 'private copy';
 
 export interface Standing {
   readonly name: string;
@@ -32,174 +38,174 @@ export interface Standing {
 
 /** The bare file is whole this long after the last step. */
 const SETTLE_MS = 2_000;
+/** A backup is made at opening, and while working no more often than this. */
+const BACKUP_EVERY_MS = 600_000;
 
 /** One open project: its file, where that lies, who may write to it, and how it gets whole to its place. */
 export class Workplace {
   readonly project: Project;
   readonly notes: readonly string[];
   readonly #settings: WorkplaceSettings;
-  readonly #path: string;
-  readonly #mode: Mode;
-  readonly #modeSays: string;
-  readonly #lock: Lock | null;
+  readonly #opened: Opened;
   readonly #firstSeq: number;
   #timer: NodeJS.Timeout | undefined;
+  /** What is being written elsewhere at the moment, so that closing can wait for it. */
+  #busy: Promise<void> = Promise.resolve();
 
-  private constructor(
-    settings: WorkplaceSettings,
-    project: Project,
-    opened: { path: string; mode: Mode; modeSays: string; lock: Lock | null; notes: readonly string[] },
-  ) {
+  private constructor(settings: WorkplaceSettings, opened: Opened) {
     this.#settings = settings;
-    this.project = project;
-    this.#path = opened.path;
-    this.#mode = opened.mode;
-    this.#modeSays = opened.modeSays;
-    this.#lock = opened.lock;
+    this.#opened = opened;
+    this.project = opened.project;
     this.notes = opened.notes;
-    this.#firstSeq = project.position.seq;
+    this.#firstSeq = opened.project.position.seq;
+    if (!opened.project.readOnly) this.#later(0);
   }
 
   /** A new draft, kept in the program's own folder until the person chooses a place. */
   static async draft(settings: WorkplaceSettings, chip: Chip): Promise<Workplace> {
-    const folder = draftFolder(settings);
-    await mkdir(folder, { recursive: true });
-    const path = join(folder, `draft-${Date.now().toString(36)}-${process.pid}-${nextDraft()}.chw`);
+    const path = await freeDraft(settings, 'draft');
     try {
       makeFile(path, chip, { program: settings.program });
     } catch (error) {
       await removeFile(path);
-      throw writeProblem(error, path);
+      throw projectProblem(error, path);
     }
     return await Workplace.open(settings, path);
   }
 
+  /** Opens a project: to work on where that is possible, to look at where someone else has it open. */
   static async open(settings: WorkplaceSettings, path: string): Promise<Workplace> {
-    const whole = resolve(path);
-    const lock = await takeLock(whole).catch((error) => {
-      throw writeProblem(error, whole);
-    });
-    if (!isLock(lock)) {
-      const project = await openForReading(whole);
-      return new Workplace(settings, project, {
-        path: whole,
-        mode: 'read-only',
-        modeSays: openElsewhere(lock),
-        lock: null,
-        notes: [],
-      });
-    }
-    try {
-      const project = await openForWork(whole);
-      const mode = dirname(whole) === draftFolder(settings) ? 'draft' : 'kept';
-      const modeSays =
-        mode === 'draft' ? 'Every edit is kept in the program’s own folder. Save it to choose a place.' : '';
-      return new Workplace(settings, project, { path: whole, mode, modeSays, lock, notes: [] });
-    } catch (error) {
-      await lock.release();
-      throw error;
-    }
+    return new Workplace(settings, await openPlace(settings, resolve(path)));
   }
 
   get standing(): Standing {
-    const draft = this.#mode === 'draft';
+    const { home } = this.#opened;
     return {
-      name: draft ? this.project.chip.name || 'Untitled' : basename(this.#path),
-      path: draft ? null : this.#path,
-      mode: this.#mode,
-      modeSays: this.#modeSays,
+      name: home.name(this.project),
+      path: home.path,
+      mode: home.mode,
+      modeSays: home.says,
       edited: this.project.position.seq !== this.#firstSeq,
     };
   }
 
-  /** Where the file lies, a draft's too. */
+  /** The path it was opened by; a draft's own file. */
   get path(): string {
-    return this.#path;
+    return this.#opened.path;
   }
 
-  /** Call after every step: the file is made whole when no further one follows. */
+  get backups(): Backups {
+    return new Backups(resolve(this.#settings.userData), this.path);
+  }
+
+  /** Call after every step: the file is made whole, and carried to its place, when no further one follows. */
   touched(): void {
     clearTimeout(this.#timer);
-    this.#timer = setTimeout(() => this.#settle(), SETTLE_MS).unref();
+    this.#timer = setTimeout(() => this.#later(BACKUP_EVERY_MS), SETTLE_MS).unref();
   }
 
-  /** Writes a whole, checked copy to `path`; what was there stays until the copy is complete. */
-  async copyTo(path: string, replace: boolean): Promise<void> {
-    const sibling = siblingOf(path);
-    try {
-      await this.project.backup(sibling);
-      await readProjectChip(sibling);
-      await syncFile(sibling);
-      // A log left beside a file that goes would be taken for the new one's.
-      for (const side of ['-wal', '-shm']) await rm(`${path}${side}`, { force: true });
-      if (replace) await moveOver(sibling, path);
-      else await moveToFree(sibling, path);
-    } catch (error) {
-      throw writeProblem(error, path);
-    } finally {
-      await removeFile(sibling);
-    }
+  /** Waits for what is being written elsewhere at the moment. */
+  async quiet(): Promise<void> {
+    await this.#busy;
   }
 
   /** Writes a copy to `path`, or beside the file under the next free name; returns where. */
   async duplicate(path: string | null, replace: boolean): Promise<string> {
     if (path !== null) {
-      await this.copyTo(resolve(path), replace);
-      return resolve(path);
+      const to = resolve(path);
+      if (to === this.#opened.home.path) throw keptHere(to);
+      await this.#copyTo(to, replace);
+      return to;
     }
-    const stem = basename(this.#path, '.chw');
+    const from = this.#opened.home.path ?? this.path;
+    const stem = basename(from, extname(from));
     for (let number = 1; ; number += 1) {
-      const copy = join(dirname(this.#path), `${stem} copy${number === 1 ? '' : ` ${number}`}.chw`);
-      try {
-        await this.copyTo(copy, false);
-        return copy;
-      } catch (error) {
-        if (!(error instanceof Problem) || number === 99 || !(await exists(copy))) throw error;
-      }
+      const copy = join(dirname(from), `${stem} copy${number === 1 ? '' : ` ${number}`}.chw`);
+      if (await exists(copy)) continue;
+      await this.#copyTo(copy, false);
+      return copy;
     }
   }
 
   /** Writes the project to `path` and goes on there: returns the workplace that replaces this one. */
   async saveAs(path: string, replace: boolean): Promise<Workplace> {
-    const whole = resolve(path);
-    if (whole === this.#path)
-      throw new Problem('output', 'The project is kept in this file already.', whole, 'Choose another name.');
-    const lock = await takeLock(whole).catch((error) => {
-      throw writeProblem(error, whole);
-    });
-    if (!isLock(lock)) throw new Problem('output', openElsewhere(lock), whole, 'Choose another name.');
-    try {
-      await this.copyTo(whole, replace);
-    } finally {
-      await lock.release();
-    }
-    const next = await Workplace.open(this.#settings, whole);
+    const to = resolve(path);
+    if (to === this.#opened.home.path) throw keptHere(to);
+    await this.#copyTo(to, replace);
+    const next = await Workplace.open(this.#settings, to);
+    const draft = this.standing.mode === 'draft';
     await this.close();
-    if (this.#mode === 'draft') await removeFile(this.#path);
+    if (draft) await removeFile(this.path);
     return next;
+  }
+
+  /** Puts a backup of `path` beside it under a name that says so, or among the drafts; returns where. */
+  static async restored(settings: WorkplaceSettings, path: string, id: string): Promise<string> {
+    const whole = resolve(path);
+    const backup = new Backups(resolve(settings.userData), whole).file(id);
+    const name = `${basename(whole, extname(whole))} (backup of ${backupTime(id)})`;
+    const source = { backup: (to: string) => copyFile(backup, to) };
+    const beside = join(dirname(whole), `${name}.chw`);
+    try {
+      await copyOut(source, beside, false);
+      return beside;
+    } catch {
+      const draft = await freeDraft(settings, name);
+      await copyOut(source, draft, false);
+      return draft;
+    }
   }
 
   /** Closes; everything acknowledged is kept. An untouched draft goes. */
   async close(): Promise<void> {
     clearTimeout(this.#timer);
-    const untouched = this.#mode === 'draft' && this.project.position.seq === 1;
-    const trials = untouched ? this.project.listTrials().length : 0;
-    this.project.close();
-    if (untouched && trials === 0) await removeFile(this.#path);
-    await this.#lock?.release();
-  }
-
-  #settle(): void {
+    const { home } = this.#opened;
+    const untouched =
+      home.mode === 'draft' && this.project.position.seq === 1 && this.project.listTrials().length === 0;
+    this.project.stopBackup();
+    await this.#busy;
     try {
       this.project.settle();
+      await home.settled(this.project);
     } catch (error) {
-      if (error instanceof Problem) this.#settings.onTrouble(error);
+      this.#tell(error);
+    } finally {
+      this.project.close();
+      if (untouched) await removeFile(this.path);
+      await home.left();
     }
   }
-}
 
-export function draftFolder(settings: { readonly userData: string }): string {
-  return join(resolve(settings.userData), 'drafts');
+  async #copyTo(path: string, replace: boolean): Promise<void> {
+    const lock = await takeLock(path).catch((error) => {
+      throw writeProblem(error, path);
+    });
+    if (!isLock(lock)) throw inUse(lock, path);
+    try {
+      await copyOut(this.project, path, replace);
+    } finally {
+      await lock.release();
+    }
+  }
+
+  /** Makes the file whole, then carries it to its place and backs it up, one such round at a time. */
+  #later(backupAfterMs: number): void {
+    this.#busy = this.#busy.then(async () => {
+      const { project } = this;
+      if (!project.isOpen) return;
+      try {
+        project.settle();
+        await this.#opened.home.settled(project);
+        if (project.position.seq > 1) await this.backups.make(project, chipHash(project.chip), backupAfterMs);
+      } catch (error) {
+        this.#tell(error);
+      }
+    });
+  }
+
+  #tell(error: unknown): void {
+    if (this.project.isOpen) this.#settings.onTrouble(projectProblem(error, this.path));
+  }
 }
 
 async function exists(path: string): Promise<boolean> {
@@ -209,21 +215,6 @@ async function exists(path: string): Promise<boolean> {
   );
 }
 
-let drafts = 0;
-function nextDraft(): number {
-  drafts += 1;
-  return drafts;
-}
-
-/** Takes a file away with what lies beside it. */
-async function removeFile(path: string): Promise<void> {
-  for (const file of [path, `${path}-wal`, `${path}-shm`, `${path}-journal`, markPath(path)])
-    await rm(file, { force: true }).catch(() => undefined);
-}
-
-function openElsewhere(opener: Opener): string {
-  const since = new Date(opener.since).toLocaleString('en-GB', { dateStyle: 'medium', timeStyle: 'short' });
-  const who = opener.user ? ` by ${opener.user}` : '';
-  const where = opener.host ? ` on ${opener.host}` : '';
-  return `This project is open${who}${where} since ${since}. You see it as it was kept a moment ago; nothing is written from here.`;
+function keptHere(path: string): Problem {
+  return new Problem('output', 'The project is kept in this file already.', path, 'Choose another name.');
 }

@@ -1,7 +1,16 @@
 import type { Chip } from '../../solver/chip/chip.ts';
-import { checkedChip } from '../chip/checked.ts';
-import { applyEdit } from '../chip/edits.ts';
-import { chipDigest, type Head, LIST_KINDS, LISTS, type PartKind, partHash } from '../chip/parts.ts';
+import { applyEdit } from '../../solver/chip/edit.ts';
+import { readEdit } from '../../solver/chip/edit-read.ts';
+import { readChip } from '../../solver/chip/schema-chip.ts';
+import {
+  chipDigest,
+  type Head,
+  LIST_KINDS,
+  LISTS,
+  type PartKind,
+  partHash,
+  rememberPart,
+} from '../chip/parts.ts';
 import { Chain, changesOf, readStep, type Step, stepOf } from '../journal/journal.ts';
 import { Stacks } from '../journal/stacks.ts';
 import { cellIsWhole } from '../kept/cells.ts';
@@ -31,12 +40,10 @@ export interface Content {
 const MOST_PART = 32 * 1024 * 1024;
 
 /**
- * Reads everything and checks everything: the file's own structure, that it declares what it should
- * and nothing else, every row against its hash, every table against its seal, every step against the
+ * Reads everything and checks everything, after `checkStructure`: every row against its hash, every table against its seal, every step against the
  * chain. Throws `Damage` where something is not as it was written.
  */
 export function readContent(store: Store): Content {
-  checkStructure(store);
   const seals = readSeals(store);
   if (!seals) throw new Damage(['the record of what the file holds cannot be read']);
   checkRows(store, seals);
@@ -47,9 +54,9 @@ export function readContent(store: Store): Content {
   return { chip, folded, foldedSeq: seals.chip.seq, seq: chain.seq, hash: chain.hash, base, stacks };
 }
 
-/** The structure of the file and its declarations. */
-export function checkStructure(store: Store): void {
-  const strange = strangeLayout(store);
+/** The structure of the file and its declarations, as layout `version` has them. */
+export function checkStructure(store: Store, version: number): void {
+  const strange = strangeLayout(store, version);
   if (strange.length > 0) throw new Damage(['the file holds parts that do not belong in a project']);
   if (store.pragma('quick_check(1)') !== 'ok') throw new Damage(['its inner structure is broken']);
   if (store.all('PRAGMA foreign_key_check').length > 0) throw new Damage(['a trial lost its result']);
@@ -78,41 +85,30 @@ function readFolded(store: Store, seal: Seal): Chip {
   const altered = new Damage(['the drawing was altered']);
   const size = store.get('SELECT max(octet_length(body)) AS size FROM chip');
   if (Number(size?.size) > MOST_PART) throw altered;
-  const lists: Record<PartKind, unknown[]> = {
-    head: [],
-    layer: [],
-    channel: [],
-    chamber: [],
-    via: [],
-    port: [],
-    target: [],
-    limit: [],
-  };
-  const hashes: Record<PartKind, Uint8Array[]> = {
-    head: [],
-    layer: [],
-    channel: [],
-    chamber: [],
-    via: [],
-    port: [],
-    target: [],
-    limit: [],
-  };
+  const kinds = ['head', ...LIST_KINDS] as const;
+  const found = new Map<string, { body: string; hash: Uint8Array }[]>(kinds.map((kind) => [kind, []]));
   let rows = 0;
   for (const row of store.iterate('SELECT kind, place, body, hash FROM chip ORDER BY kind, place')) {
     rows += 1;
-    const kind = String(row.kind) as PartKind;
-    const list = Object.hasOwn(lists, kind) ? lists[kind] : null;
-    const body = row.body;
-    if (!list || row.place !== list.length || typeof body !== 'string') throw altered;
-    const hash = partHash(kind, body);
+    const { kind, place, body } = row;
+    const list = found.get(String(kind));
+    if (!list || place !== list.length || typeof body !== 'string') throw altered;
+    const hash = partHash(String(kind), body);
     if (!sameBytes(row.hash, hash)) throw altered;
-    hashes[kind].push(hash);
-    list.push(JSON.parse(body));
+    list.push({ body, hash });
   }
-  const digest = chipDigest([...hashes.head, ...LIST_KINDS.flatMap((kind) => hashes[kind])]);
-  if (lists.head.length !== 1 || rows !== seal.rows || !sameBytes(digest, seal.digest)) throw altered;
-  return checkedChip(assemble(lists));
+  const inOrder = kinds.flatMap((kind) => found.get(kind)!);
+  const digest = chipDigest(inOrder.map((part) => part.hash));
+  if (found.get('head')!.length !== 1 || rows !== seal.rows || !sameBytes(digest, seal.digest)) throw altered;
+  const lists = Object.fromEntries(
+    kinds.map((kind) => [kind, found.get(kind)!.map((part) => JSON.parse(part.body) as unknown)]),
+  ) as Record<PartKind, unknown[]>;
+  const chip = readChip(assemble(lists));
+  for (const kind of LIST_KINDS) {
+    const list: readonly object[] = chip[LISTS[kind]];
+    for (const [place, { body, hash }] of found.get(kind)!.entries()) rememberPart(list[place]!, body, hash);
+  }
+  return chip;
 }
 
 /** A chip, still to be checked, from its parts. */
@@ -148,10 +144,11 @@ function readSteps(
 function replay(store: Store, folded: Chip, steps: readonly Step[]): Chip {
   let chip = folded;
   for (const step of steps) {
-    const edit = step.of === null ? step : readStep(store, step.of);
+    const of = step.of === null ? step : readStep(store, step.of);
     if (step.kind === 'start') throw new Damage(['the record of edits was altered']);
-    const { forward, backward } = changesOf(edit);
-    chip = applyEdit(chip, { label: step.label, changes: step.kind === 'undo' ? backward : forward });
+    const { forward, backward } = changesOf(of);
+    const edit = readEdit({ label: step.label, changes: step.kind === 'undo' ? backward : forward });
+    chip = applyEdit(chip, edit);
   }
   return chip;
 }

@@ -1,5 +1,6 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { sha256Of } from '../store/hash.ts';
+import { canonical } from './canonical.ts';
 
 /** The lists of a chip and what one member of each is called in the file. */
 export const LISTS = {
@@ -33,10 +34,15 @@ export function headOf(chip: Chip): Head {
 /** Things drawn are never changed, only replaced, so what was written of one stays true. */
 const written = new WeakMap<object, { readonly body: string; readonly hash: Uint8Array }>();
 
+/** Notes how a thing drawn stands in the file that it was read from. */
+export function rememberPart(value: object, body: string, hash: Uint8Array): void {
+  written.set(value, { body, hash });
+}
+
 export function partOf(kind: PartKind, place: number, value: object): Part {
   let text = written.get(value);
   if (!text) {
-    const body = JSON.stringify(value);
+    const body = canonical(value);
     text = { body, hash: partHash(kind, body) };
     written.set(value, text);
   }
@@ -65,14 +71,14 @@ export function chipHash(chip: Chip): Uint8Array {
   return chipDigest(Array.from(partsOf(chip), (part) => part.hash));
 }
 
-/** Parts that differ between two chips: rows to write, and (kind, first place) from which rows are gone. */
+/** Parts that differ between two chips, the head always: rows to write, and (kind, first place) from which rows are gone. */
 export function differences(
   before: Chip | null,
   after: Chip,
 ): { readonly write: Part[]; readonly gone: { readonly kind: ListKind; readonly from: number }[] } {
   const write: Part[] = [];
   const gone: { kind: ListKind; from: number }[] = [];
-  if (!before || !sameHead(before, after)) write.push(partOf('head', 0, headOf(after)));
+  write.push(partOf('head', 0, headOf(after)));
   for (const kind of LIST_KINDS) {
     const old: readonly object[] = before?.[LISTS[kind]] ?? [];
     const list: readonly object[] = after[LISTS[kind]];
@@ -83,14 +89,4 @@ export function differences(
     if (old.length > list.length) gone.push({ kind, from: list.length });
   }
   return { write, gone };
-}
-
-function sameHead(a: Chip, b: Chip): boolean {
-  return (
-    a.name === b.name &&
-    a.note === b.note &&
-    a.lengthUnit === b.lengthUnit &&
-    a.outline === b.outline &&
-    a.fluid === b.fluid
-  );
 }

@@ -1,4 +1,4 @@
-import type { ChipEdit } from '../chip/edits.ts';
+import type { ChipEdit } from '../../solver/chip/edit.ts';
 import { sameBytes, sha256Of } from '../store/hash.ts';
 import { pack, unpack } from '../store/pack.ts';
 import type { Row, Store } from '../store/store.ts';
@@ -22,6 +22,12 @@ export interface Step {
 export interface StepChanges {
   readonly forward: ChipEdit['changes'];
   readonly backward: ChipEdit['changes'];
+}
+
+/** The same as a file has them: lists still to be checked. */
+export interface FoundChanges {
+  readonly forward: readonly unknown[];
+  readonly backward: readonly unknown[];
 }
 
 export const NO_BODY = new Uint8Array(0);
@@ -70,8 +76,8 @@ export function packChanges(changes: StepChanges): Uint8Array {
 }
 
 /** The changes of an edit; throws where the body is no such thing. */
-export function changesOf(step: Step): StepChanges {
-  const found = unpack(step.body) as Partial<StepChanges> | null;
+export function changesOf(step: Step): FoundChanges {
+  const found = unpack(step.body) as Partial<FoundChanges> | null;
   if (!Array.isArray(found?.forward) || !Array.isArray(found.backward)) throw new Error('no changes');
   return { forward: found.forward, backward: found.backward };
 }

@@ -41,6 +41,13 @@ export function trialIsWhole(row: Row): boolean {
   );
 }
 
+/** A whole row as it is without its result, where that was lost. */
+export function trialWithoutResult(row: Row): Row {
+  const chip = row.chip as Uint8Array;
+  const hash = trialHash(Number(row.id), String(row.name), Number(row.made), chip, null);
+  return { ...row, result: null, hash };
+}
+
 /** The chip of a row as it was packed, to be checked before it is used. */
 export function trialChip(row: Row): unknown {
   return unpack(row.chip as Uint8Array);

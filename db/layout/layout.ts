@@ -1,6 +1,6 @@
 import type { Store } from '../store/store.ts';
 import type { Migration } from './tables.ts';
-import { APPLICATION_ID, MIGRATIONS, VERSION } from './tables.ts';
+import { APPLICATION_ID, MIGRATIONS } from './tables.ts';
 
 /** Bytes that every file of this engine begins with. */
 const MAGIC = 'SQLite format 3\0';
@@ -51,7 +51,7 @@ export function expectedLayout(version: number): ReadonlyMap<string, string> {
 }
 
 /** The names of things in the file that do not belong there or differ; empty where all is as made. */
-export function strangeLayout(store: Store, version = VERSION): string[] {
+export function strangeLayout(store: Store, version: number): string[] {
   const expected = new Map(expectedLayout(version));
   const strange: string[] = [];
   for (const row of store.all('SELECT type, name, tbl_name, sql FROM sqlite_schema')) {

@@ -14,6 +14,9 @@ const SAFE: readonly (readonly [string, string | number])[] = [
   ['synchronous', 2],
 ];
 
+/** Pages that a copy writes before others have their turn: about 10 ms. */
+const PAGES_A_TURN = 1000;
+
 /** Older engines can lose the log of a file that two processes use. */
 const LEAST_ENGINE = [3, 51, 3] as const;
 
@@ -21,6 +24,8 @@ const LEAST_ENGINE = [3, 51, 3] as const;
 export class Store {
   readonly #db: Database.Database;
   readonly #statements = new Map<string, Database.Statement<Value[], Row>>();
+
+  #stopping = false;
 
   private constructor(db: Database.Database) {
     this.#db = db;
@@ -55,6 +60,16 @@ export class Store {
       own[19] = 1;
     }
     return step('open bytes', () => new Store(new Database(own)));
+  }
+
+  /** An empty one in memory. */
+  static inMemory(): Store {
+    return step('open in memory', () => new Store(new Database(':memory:')));
+  }
+
+  /** The whole of it, as the bytes of a file. */
+  bytes(): Uint8Array {
+    return step('bytes', () => this.#db.serialize());
   }
 
   pragma(text: string): unknown {
@@ -97,9 +112,20 @@ export class Store {
 
   /** Writes a whole, consistent copy to `path`, a little at a time. */
   async backup(path: string): Promise<void> {
+    this.#stopping = false;
     await stepAsync('backup', async () => {
-      await this.#db.backup(path, { progress: () => 2000 });
+      await this.#db.backup(path, {
+        progress: () => {
+          if (this.#stopping) throw new Error('stopped');
+          return PAGES_A_TURN;
+        },
+      });
     });
+  }
+
+  /** Gives up a copy that is being written. */
+  stopBackup(): void {
+    this.#stopping = true;
   }
 
   get isOpen(): boolean {

@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import type { Chip } from '../../solver/chip/chip.ts';
+import type { ChipEdit } from '../../solver/chip/edit.ts';
 import type { Result } from '../../solver/chip/result.ts';
-import type { ChipEdit } from './edit.ts';
 
 /**
  * The seam between the page and whichever host runs it: every request a page can make, every event

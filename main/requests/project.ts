@@ -1,7 +1,8 @@
-import { mkdir } from 'node:fs/promises';
 import { basename, dirname, extname, join } from 'node:path';
+import { Backups } from '../../db/backup/backups.ts';
+import { freeDraft } from '../../db/place/drafts.ts';
 import { replaceFile } from '../../db/place/replace.ts';
-import { draftFolder } from '../../db/workplace.ts';
+import { Workplace } from '../../db/workplace.ts';
 import { readDescription } from '../../solver/chip/description.ts';
 import { demoText } from '../user/demos.ts';
 import { wholePath } from './files.ts';
@@ -20,7 +21,10 @@ export const projectRequests: Handlers<
   | 'project.edit'
   | 'project.undo'
   | 'project.redo'
+  | 'project.revert'
   | 'project.history'
+  | 'project.backups'
+  | 'project.restore'
 > = {
   'project.new': async (session, { chip }) => await session.draft(chip),
   'project.import': async (session, { text, name }) => await session.draft(readDescription(text, name)),
@@ -28,12 +32,7 @@ export const projectRequests: Handlers<
     await session.draft(readDescription(await demoText(session.settings.assets, id), id)),
   'project.open': async (session, { path }) => await session.open(wholePath(path)),
   'project.upload': async (session, { name, bytes }) => {
-    const folder = draftFolder(session.settings);
-    await mkdir(folder, { recursive: true });
-    const stem = basename(name, extname(name))
-      .replaceAll(/[^\p{L}\p{N} _-]/gu, '_')
-      .slice(0, 60);
-    const path = join(folder, `${stem || 'project'}-${Date.now().toString(36)}.chw`);
+    const path = await freeDraft(session.settings, basename(name, extname(name)));
     await replaceFile(path, bytes, false);
     return await session.open(path);
   },
@@ -64,6 +63,19 @@ export const projectRequests: Handlers<
     const moved = workplace.project.redo();
     workplace.touched();
     return moved;
+  },
+  'project.revert': ({ workplace }) => {
+    const moved = workplace.project.revert();
+    workplace.touched();
+    return moved;
+  },
+  'project.backups': async (session, { path }) => {
+    const of = path === undefined ? session.workplace.path : wholePath(path);
+    return { backups: await new Backups(session.settings.userData, of).list() };
+  },
+  'project.restore': async (session, { path, id }) => {
+    const of = path === undefined ? session.workplace.path : wholePath(path);
+    return await session.open(await Workplace.restored(session.workplaceSettings, of, id));
   },
   'project.history': ({ workplace }, { limit }) => ({ steps: workplace.project.history(limit ?? 200) }),
 };
