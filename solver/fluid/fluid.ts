@@ -146,7 +146,7 @@ function measured(table: readonly MeasuredRow[], temperature: number): Fluid {
     positive(row.temperature, 'temperature', `${where}.temperature`);
     positive(row.viscosity, 'viscosity', `${where}.viscosity`);
     positive(row.density, 'density', `${where}.density`);
-    if (i > 0 && !(row.temperature > table[i - 1]!.temperature)) {
+    if (i > 0 && !(row.temperature > table[i - 1].temperature)) {
       throw new Problem(
         'fluid',
         'The temperatures of the table do not increase from row to row.',
@@ -156,7 +156,7 @@ function measured(table: readonly MeasuredRow[], temperature: number): Fluid {
     }
   });
   const temperatures = table.map((row) => row.temperature);
-  within(temperature, temperatures[0]!, temperatures.at(-1)!, 'The table');
+  within(temperature, temperatures[0], temperatures.at(-1)!, 'The table');
   const at = (values: readonly number[]): number =>
     hermite(temperatures, values, monotoneSlopes(temperatures, values), temperature);
   return {
@@ -164,7 +164,7 @@ function measured(table: readonly MeasuredRow[], temperature: number): Fluid {
     viscosity: at(table.map((row) => row.viscosity)),
     density: at(table.map((row) => row.density)),
     source: `the user's table of ${table.length} temperatures, interpolated without overshoot`,
-    range: `${celsius(temperatures[0]!)} to ${celsius(temperatures.at(-1)!)}`,
+    range: `${celsius(temperatures[0])} to ${celsius(temperatures.at(-1)!)}`,
     uncertainty: null,
   };
 }

@@ -8,20 +8,20 @@
 export function monotoneSlopes(x: ArrayLike<number>, y: ArrayLike<number>): Float64Array {
   const n = x.length;
   const slope = new Float64Array(n);
-  const secant = (i: number): number => (y[i + 1]! - y[i]!) / (x[i + 1]! - x[i]!);
+  const secant = (i: number): number => (y[i + 1] - y[i]) / (x[i + 1] - x[i]);
   if (n === 2) return slope.fill(secant(0));
   for (let i = 1; i < n - 1; i += 1) {
     const before = secant(i - 1);
     const after = secant(i);
     if (before * after <= 0) continue;
-    const left = x[i]! - x[i - 1]!;
-    const right = x[i + 1]! - x[i]!;
+    const left = x[i] - x[i - 1];
+    const right = x[i + 1] - x[i];
     const w1 = 2 * right + left;
     const w2 = right + 2 * left;
     slope[i] = (w1 + w2) / (w1 / before + w2 / after);
   }
-  slope[0] = endSlope(x[1]! - x[0]!, x[2]! - x[1]!, secant(0), secant(1));
-  slope[n - 1] = endSlope(x[n - 1]! - x[n - 2]!, x[n - 2]! - x[n - 3]!, secant(n - 2), secant(n - 3));
+  slope[0] = endSlope(x[1] - x[0], x[2] - x[1], secant(0), secant(1));
+  slope[n - 1] = endSlope(x[n - 1] - x[n - 2], x[n - 2] - x[n - 3], secant(n - 2), secant(n - 3));
   return slope;
 }
 
@@ -38,7 +38,7 @@ export function intervalOf(x: ArrayLike<number>, at: number): number {
   let high = x.length - 1;
   while (high - low > 1) {
     const middle = (low + high) >> 1;
-    if (x[middle]! <= at) low = middle;
+    if (x[middle] <= at) low = middle;
     else high = middle;
   }
   return low;
@@ -52,12 +52,11 @@ export function hermite(
   at: number,
 ): number {
   const i = intervalOf(x, at);
-  const h = x[i + 1]! - x[i]!;
-  const s = (at - x[i]!) / h;
+  const h = x[i + 1] - x[i];
+  const s = (at - x[i]) / h;
   const r = 1 - s;
   return (
-    r * r * ((1 + 2 * s) * y[i]! + s * h * slope[i]!) +
-    s * s * ((1 + 2 * r) * y[i + 1]! - r * h * slope[i + 1]!)
+    r * r * ((1 + 2 * s) * y[i] + s * h * slope[i]) + s * s * ((1 + 2 * r) * y[i + 1] - r * h * slope[i + 1])
   );
 }
 
@@ -69,10 +68,8 @@ export function hermiteSlope(
   at: number,
 ): number {
   const i = intervalOf(x, at);
-  const h = x[i + 1]! - x[i]!;
-  const s = (at - x[i]!) / h;
+  const h = x[i + 1] - x[i];
+  const s = (at - x[i]) / h;
   const r = 1 - s;
-  return (
-    (6 * s * r * (y[i + 1]! - y[i]!)) / h + r * (1 - 3 * s) * slope[i]! + s * (3 * s - 2) * slope[i + 1]!
-  );
+  return (6 * s * r * (y[i + 1] - y[i])) / h + r * (1 - 3 * s) * slope[i] + s * (3 * s - 2) * slope[i + 1];
 }

@@ -47,7 +47,7 @@ export function iapwsViscosity(temperature: number, density: number): number {
   const t = temperature / CRITICAL_TEMPERATURE;
   const r = density / CRITICAL_DENSITY;
   let dilute = 0;
-  for (let i = 0; i < DILUTE.length; i += 1) dilute += DILUTE[i]! / t ** i;
+  for (let i = 0; i < DILUTE.length; i += 1) dilute += DILUTE[i] / t ** i;
   let sum = 0;
   for (const [i, j, coefficient] of RESIDUAL) sum += coefficient * (1 / t - 1) ** i * (r - 1) ** j;
   return 1e-6 * ((100 * Math.sqrt(t)) / dilute) * Math.exp(r * sum);

@@ -64,7 +64,7 @@ export function markdown(table: Table): string {
     line('quantity', 'case', 'error', 'tolerance', 'margin'),
     rule(5),
     ...table.thinnest.map((place) => {
-      const row = table.rows[place]!;
+      const row = table.rows[place];
       return line(row.quantity, row.at, number(row.error), number(row.tolerance), margin(row));
     }),
     '',
@@ -156,7 +156,7 @@ ${(Object.keys(KINDS) as CheckedRow['check'][])
 ${grid(
   ['quantity', 'case', 'error', 'tolerance', 'margin'],
   table.thinnest.map((place) => {
-    const row = table.rows[place]!;
+    const row = table.rows[place];
     return cells([row.quantity, row.at], figures(row));
   }),
 )}

@@ -63,7 +63,7 @@ console.log(
   `\n${table.rows.length} checks from ${files.length} files, ${table.failed} failed. Thinnest margins:`,
 );
 for (const place of table.thinnest) {
-  const row = table.rows[place]!;
+  const row = table.rows[place];
   console.log(
     `  ${margin(row)}  ${row.quantity}, ${row.at}: ${number(row.error)} of ${number(row.tolerance)}`,
   );

@@ -36,15 +36,15 @@ test('only what was recorded stands in the table, worst margins first', () => {
     ['a = 10', true],
   ]);
   expect(table.failed).toBe(2);
-  expect(table.thinnest.map((place) => table.rows[place]!.at)).toEqual(['a = 4', 'a = 3', 'a = 10', 'a = 2']);
-  expect(table.rows[3]!.margin).toBeCloseTo(2, 12);
+  expect(table.thinnest.map((place) => table.rows[place].at)).toEqual(['a = 4', 'a = 3', 'a = 10', 'a = 2']);
+  expect(table.rows[3].margin).toBeCloseTo(2, 12);
 });
 
 test('at most ten thin margins are listed', () => {
   const rows = Array.from({ length: 30 }, (_, i) => row({ at: `${i}`, error: i * 1e-5 }));
   const table = tableOf(rows, about);
   expect(table.thinnest).toHaveLength(10);
-  expect(table.rows[table.thinnest[0]!]!.at).toBe('29');
+  expect(table.rows[table.thinnest[0]].at).toBe('29');
 });
 
 test('a check without an error has no margin, even where its tolerance is zero', () => {

@@ -1,4 +1,4 @@
-import { shearRate } from '../../fluid/shear.ts';
+import { apparentViscosity, shearRate } from '../../fluid/shear.ts';
 import type { ShearModel } from '../../fluid/spec.ts';
 
 /**
@@ -14,52 +14,60 @@ import type { ShearModel } from '../../fluid/spec.ts';
 /** Flow (m^3/s) through a round tube under a pressure gradient (Pa/m); `radius` in m. */
 export function tubeFlow(model: ShearModel, radius: number, gradient: number): number {
   const wall = (gradient * radius) / 2;
-  if (wall <= 0) return 0;
-  return Math.PI * radius ** 3 * momentOfRate(model, wall, 2);
+  return wall > 0 ? Math.PI * radius ** 3 * rateMoment(model, wall, 2) : 0;
 }
 
 /** Flow (m^3/s) between parallel plates, side walls left out; `gap` and `width` in m. */
 export function plateFlow(model: ShearModel, gap: number, width: number, gradient: number): number {
   const wall = (gradient * gap) / 2;
-  if (wall <= 0) return 0;
-  return (width * gap ** 2 * momentOfRate(model, wall, 1)) / 2;
+  return wall > 0 ? (width * gap ** 2 * rateMoment(model, wall, 1)) / 2 : 0;
 }
 
-/** tau_w^-(power + 1) times the integral of tau^power g(tau) from 0 to tau_w. */
-function momentOfRate(model: ShearModel, wall: number, power: 1 | 2): number {
+/** Velocity on the axis over the distance from axis to wall (1/s): tau_w^-1 times the integral of g(tau). */
+export function axisRate(model: ShearModel, wall: number): number {
+  return rateMoment(model, wall, 0);
+}
+
+/** tau_w^-(power + 1) times the integral of tau^power g(tau) from 0 to tau_w, 1/s. */
+export function rateMoment(model: ShearModel, wall: number, power: 0 | 1 | 2): number {
   switch (model.kind) {
     case 'power-law':
       return shearRate(model, wall) / (power + 1 + 1 / model.index);
     case 'casson': {
       const xi = model.yieldStress / wall;
       if (xi >= 1) return 0;
+      // Integral of s^power (sqrt(s) - sqrt(xi))^2 from xi to 1.
+      const p = power;
       const share =
-        power === 2
-          ? 1 - (16 / 7) * Math.sqrt(xi) + (4 / 3) * xi - xi ** 4 / 21
-          : 1 - (12 / 5) * Math.sqrt(xi) + (3 / 2) * xi - xi ** 3 / 10;
-      return ((wall / model.viscosity) * share) / (power + 2);
+        1 / (p + 2) -
+        (2 * Math.sqrt(xi)) / (p + 1.5) +
+        xi / (p + 1) -
+        xi ** (p + 2) * (1 / (p + 2) - 2 / (p + 1.5) + 1 / (p + 1));
+      return (wall / model.viscosity) * share;
     }
-    case 'carreau': {
-      // By parts, so that only the stress at a rate is needed, never its inverse inside the integral:
-      // (power + 1) integral tau^power g dtau = tau_w^(power+1) g_w - integral tau(g)^(power+1) dg.
-      const rate = shearRate(model, wall);
-      let integral = 0;
-      // Composite Gauss over decades of the rate from far below the wall's: the integrand is smooth in ln g.
-      const parts = 48;
-      const from = Math.log(rate * 1e-9);
-      const step = (Math.log(rate) - from) / parts;
-      for (let i = 0; i < parts; i += 1) {
-        for (let k = 0; k < NODES.length; k += 1) {
-          const g = Math.exp(from + step * (i + NODES[k]!));
-          const viscosity =
-            model.infiniteShear +
-            (model.zeroShear - model.infiniteShear) * (1 + (model.time * g) ** 2) ** ((model.index - 1) / 2);
-          integral += WEIGHTS[k]! * step * g * ((viscosity * g) / wall) ** (power + 1);
-        }
-      }
-      return (rate - integral) / (power + 1);
+    case 'carreau':
+      return carreauMoment(model, wall, power);
+  }
+}
+
+/**
+ * By parts, so that only the stress at a rate is needed, never its inverse inside the integral:
+ * (power + 1) integral of tau^power g dtau = tau_w^(power+1) g_w - integral of tau^(power+1) dg,
+ * by Gauss's rule over the logarithm of the rate, where it is smooth.
+ */
+function carreauMoment(model: ShearModel, wall: number, power: number): number {
+  const rate = shearRate(model, wall);
+  const parts = 48;
+  const from = Math.log(rate * 1e-9);
+  const step = (Math.log(rate) - from) / parts;
+  let integral = 0;
+  for (let i = 0; i < parts; i += 1) {
+    for (let k = 0; k < NODES.length; k += 1) {
+      const g = Math.exp(from + step * (i + NODES[k]));
+      integral += WEIGHTS[k] * step * g * ((apparentViscosity(model, g) * g) / wall) ** (power + 1);
     }
   }
+  return (rate - integral) / (power + 1);
 }
 
 /** Gauss-Legendre on [0, 1], five points. */

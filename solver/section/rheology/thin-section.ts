@@ -1,0 +1,170 @@
+import type { ShearModel } from '../../fluid/spec.ts';
+import type { Profile } from '../profile.ts';
+import type { Section } from '../section.ts';
+import { sectionOf } from '../section-of.ts';
+import { inverse } from './inverse.ts';
+import { type ScaledFluid, scaledFluid, stressGain } from './scaled.ts';
+import { STEP, stepOf, tableEnds } from './shape-table.ts';
+import { type ShapeMix, type ShapeTables, shapeTables } from './shapes.ts';
+
+/**
+ * Flow of a shear-thinning fluid through one section under a pressure gradient:
+ *
+ *   Q = K G f / viscosity,   f the fluidity at the mean wall stress G A / P,   K the Newtonian conductance,
+ *
+ * f from a table of solved flows (cubic with exact slopes, kept monotone; within 3e-4 of a solve).
+ */
+export interface ThinSection {
+  readonly section: Section;
+  /** Pa/m below which a yield stress holds everything; 0 without one. */
+  readonly yieldGradient: number;
+  /** Flow (m³/s) and its derivative by the gradient, for a gradient >= 0 (Pa/m), into out[0] and out[1]. */
+  flow(gradient: number, out: Float64Array): void;
+  /** Gradient (Pa/m) that drives a flow >= 0, and its derivative by the flow, into out[0] and out[1]. */
+  gradient(flow: number, out: Float64Array): void;
+  /** Peak over mean wall stress and over mean velocity at a gradient; null as the section's own. */
+  peaks(gradient: number): { readonly stress: number | null; readonly velocity: number };
+}
+
+/**
+ * Below its yield stress a fluid stands; the network needs a slope all the same, or it could not tell
+ * which way to go. This share of the Newtonian flow is let through, far below what is reported as flow.
+ */
+export const LEAK = 1e-10;
+
+const tables = new Map<string, ShapeTables>();
+/** Tables are kept for this many different fluids. */
+const FLUIDS = 4;
+
+function tablesOf(fluid: ScaledFluid): ShapeTables {
+  const known = tables.get(fluid.key);
+  if (known) return known;
+  const oldest = tables.keys().next();
+  if (tables.size >= FLUIDS && !oldest.done) tables.delete(oldest.value);
+  const shapes = shapeTables(fluid);
+  tables.set(fluid.key, shapes);
+  return shapes;
+}
+
+/** @param width mask width and depth, m */
+export function thinSection(
+  shear: ShearModel,
+  profile: Profile,
+  width: number,
+  depth: number,
+  where = '',
+): ThinSection {
+  const section = sectionOf(profile, width, depth, where);
+  const fluid = scaledFluid(shear);
+  const mix = tablesOf(fluid).mixOf(profile, width, depth);
+  const fluidity = mixedFluidity(fluid, mix);
+  const yieldStress = mixed(mix, (table) => table.yieldStress);
+  const perGradient = section.meanShear / fluid.stress;
+  const conductance = section.conductance / fluid.viscosity;
+  const at = new Float64Array(2);
+  let last = 1 / perGradient;
+
+  const flow = (gradient: number, out: Float64Array): void => {
+    fluidity(gradient * perGradient, at);
+    out[0] = conductance * gradient * (at[0] + LEAK);
+    out[1] = conductance * (at[0] * (1 + at[1]) + LEAK);
+  };
+  return {
+    section,
+    yieldGradient: yieldStress / perGradient,
+    flow,
+    gradient(wanted, out) {
+      inverse(flow, wanted, last, out);
+      // Flows are asked for in small steps: the answer is the best next guess.
+      if (out[0] > 0) last = out[0];
+    },
+    peaks(gradient) {
+      const x = stepOf(fluid, gradient * perGradient, yieldStress);
+      const [low, high] = tableEnds(fluid);
+      const inside = Number.isNaN(x) ? low : Math.min(Math.max(x, low), high);
+      const i = Math.min(Math.floor(inside), Math.max(low, high - 1));
+      const s = low === high ? 0 : inside - i;
+      const value = (k: number, of: 'peakStress' | 'peakVelocity'): number =>
+        mixed(mix, (table) => table.node(k)[of]);
+      const between = (of: 'peakStress' | 'peakVelocity'): number =>
+        s === 0 ? value(i, of) : (1 - s) * value(i, of) + s * value(i + 1, of);
+      return {
+        stress:
+          section.peakShear === null ? null : (section.peakShear / section.meanShear) * between('peakStress'),
+        velocity: section.peakVelocity * between('peakVelocity'),
+      };
+    },
+  };
+}
+
+function mixed(mix: ShapeMix, value: (table: ShapeMix[number]['table']) => number): number {
+  let sum = 0;
+  for (const { table, share } of mix) sum += share * value(table);
+  return sum;
+}
+
+/** Fluidity at a mean wall stress (scaled), and d ln f / d ln stress, into out[0] and out[1]. */
+function mixedFluidity(fluid: ScaledFluid, mix: ShapeMix): (stress: number, out: Float64Array) => void {
+  const { model } = fluid;
+  const [low, high] = tableEnds(fluid);
+  const yieldStress = mixed(mix, (table) => table.yieldStress);
+  if (model.kind === 'power-law') {
+    const unit = Math.exp(mixed(mix, (table) => table.node(0).logFluidity));
+    const power = 1 / model.index - 1;
+    return (stress, out) => {
+      out[0] = unit * stress ** power;
+      out[1] = power;
+    };
+  }
+  // Values and slopes at the steps that have been asked for.
+  const value = new Float64Array(high - low + 1).fill(Number.NaN);
+  const slope = new Float64Array(high - low + 1);
+  const prepare = (k: number): void => {
+    if (!Number.isNaN(value[k - low])) return;
+    value[k - low] = mixed(mix, (table) => table.node(k).logFluidity);
+    slope[k - low] = Math.max(
+      0,
+      mixed(mix, (table) => table.node(k).slope),
+    );
+  };
+  const last = (k: number): number => {
+    prepare(k);
+    return value[k - low];
+  };
+  return (stress, out) => {
+    if (!(stress > yieldStress)) {
+      out[0] = model.kind === 'casson' ? 0 : 1;
+      out[1] = 0;
+      return;
+    }
+    const x = stepOf(fluid, stress, yieldStress);
+    // d(steps) / d ln(stress), so that slopes by the step become slopes by the stress.
+    let log: number;
+    let perStep: number;
+    if (x <= low) {
+      // Carreau: its viscosity at rest. Casson: the plug fills the section, flow rises as the cube of the excess.
+      perStep = model.kind === 'casson' ? 3 * STEP : 0;
+      log = last(low) + perStep * (x - low);
+    } else if (x >= high) {
+      // Carreau: the last slope goes on. Casson: Newtonian as the root of yield over stress falls.
+      const end = last(high);
+      const fall = model.kind === 'casson' ? Math.exp((-STEP * (x - high)) / 2) : 1;
+      log = model.kind === 'casson' ? end * fall : end + slope[high - low] * STEP * (x - high);
+      perStep = model.kind === 'casson' ? (-end * fall * STEP) / 2 : slope[high - low] * STEP;
+    } else {
+      const k = Math.floor(x);
+      prepare(k);
+      prepare(k + 1);
+      const rise = value[k + 1 - low] - value[k - low];
+      // Monotone if no slope is above three times the chord (Fritsch and Carlson 1980, SIAM J. Numer. Anal. 17, 238).
+      const m0 = Math.min(slope[k - low] * STEP, 3 * Math.max(rise, 0));
+      const m1 = Math.min(slope[k + 1 - low] * STEP, 3 * Math.max(rise, 0));
+      const s = x - k;
+      const r = 1 - s;
+      log = value[k - low] + s * s * (3 - 2 * s) * rise + s * r * (r * m0 - s * m1);
+      perStep = 6 * s * r * rise + r * (1 - 3 * s) * m0 + s * (3 * s - 2) * m1;
+    }
+    out[0] = Math.exp(log);
+    out[1] = perStep / (STEP * stressGain(model, x * STEP));
+  };
+}
