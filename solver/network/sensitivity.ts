@@ -1,0 +1,84 @@
+import { solve } from '../sparse/solve.ts';
+import type { PreparedNetwork } from './prepare.ts';
+import type { NetworkSolution, NetworkSpec } from './spec.ts';
+
+/** A flow whose dependence is asked for: that of a duct or of a drive, by index. */
+export interface Target {
+  readonly of: 'duct' | 'drive';
+  readonly index: number;
+}
+
+export interface Gradient {
+  /** m³/s by which the flow changes per relative change of each duct's resistance: ∂q/∂ln R, ducts. */
+  readonly byResistance: Float64Array;
+  /** ∂q/∂value of each drive: m³/(s Pa) for a pressure, 1 for a flow. */
+  readonly byDrive: Float64Array;
+}
+
+/**
+ * How flows of a solved network depend on every resistance and every drive, by one more solve with the
+ * factor at hand for each: with λ the pressures' weights in the flow q (A λ = ∂q/∂p; at a pressure-driven
+ * node λ = −1 where its own flow is asked for, else 0),
+ *   ∂q/∂ln R_e = (λ from − λ to) q_e, less q itself where e is the duct asked for,
+ *   ∂q/∂(flow driven in at i) = λ_i,   ∂q/∂(pressure given at k) = −Σ over edges at k of g (λ_k − λ_other),
+ * plus ± g of the duct asked for where it ends at k.
+ *
+ * @param network as left by the `solveNetwork` of the same spec that gave `solution`
+ */
+export function gradients(
+  spec: NetworkSpec,
+  network: PreparedNetwork,
+  solution: NetworkSolution,
+  targets: readonly Target[],
+): Gradient[] {
+  const { edges, unknown, nodeOf, conductance, factor } = network;
+  const { from, to, driveNode } = edges;
+  const n = nodeOf.length;
+  const weights = targets.map(() => new Float64Array(edges.nodes));
+  const right = new Float64Array(n * targets.length);
+  targets.forEach(({ of, index }, t) => {
+    const add = (node: number, value: number) => {
+      if (unknown[node] >= 0) right[t * n + unknown[node]] += value;
+    };
+    if (of === 'duct') {
+      if (from[index] === to[index]) return;
+      add(from[index], conductance[index]);
+      add(to[index], -conductance[index]);
+      return;
+    }
+    if (spec.drives[index].kind === 'flow') return;
+    const at = driveNode[index];
+    weights[t][at] = -1;
+    for (let e = 0; e < from.length; e += 1) {
+      if (from[e] === to[e]) continue;
+      if (from[e] === at) add(to[e], -conductance[e]);
+      if (to[e] === at) add(from[e], -conductance[e]);
+    }
+  });
+  solve(factor, right, targets.length);
+
+  return targets.map(({ of, index }, t) => {
+    const weight = weights[t];
+    for (let u = 0; u < n; u += 1) weight[nodeOf[u]] = right[t * n + u];
+    const byResistance = new Float64Array(spec.resistance.length);
+    for (let e = 0; e < byResistance.length; e += 1) {
+      byResistance[e] = (weight[from[e]] - weight[to[e]]) * solution.ductFlow[e];
+    }
+    const supplied = new Float64Array(edges.nodes);
+    for (let e = 0; e < from.length; e += 1) {
+      const q = conductance[e] * (weight[from[e]] - weight[to[e]]);
+      supplied[from[e]] -= q;
+      supplied[to[e]] += q;
+    }
+    if (of === 'duct') {
+      byResistance[index] -= solution.ductFlow[index];
+      supplied[from[index]] += conductance[index];
+      supplied[to[index]] -= conductance[index];
+    }
+    const byDrive = Float64Array.from(spec.drives, ({ kind, node }, d) =>
+      kind === 'flow' ? weight[node] : supplied[driveNode[d]],
+    );
+    if (of === 'drive' && spec.drives[index].kind === 'flow') byDrive[index] = 1;
+    return { byResistance, byDrive };
+  });
+}
