@@ -22,6 +22,8 @@ export interface Alteration {
   readonly put?: readonly PartValue[];
   readonly drop?: readonly Ref[];
   readonly set?: Whole;
+  /** Parts (or "layer:flow") that get another id; what speaks of them follows. */
+  readonly rename?: readonly { readonly ref: Ref; readonly to: string }[];
 }
 
 /**

@@ -1,0 +1,81 @@
+import type { Chip, Limit, Target } from '../../solver/chip/chip.ts';
+import type { Change, ChipEdit } from '../../solver/chip/edit.ts';
+import { readRef } from '../state/ref.ts';
+import type { Alteration } from '../tools/tool.ts';
+
+const LISTS = { channel: 'channels', chamber: 'chambers', via: 'vias', port: 'ports' } as const;
+
+/**
+ * An alteration as the edit that the project keeps: parts in place of those that bear their ids, new ones
+ * last; what spoke of a dropped part goes with it.
+ */
+export function toEdit(chip: Chip, alteration: Alteration): ChipEdit {
+  const changes: Change[] = [];
+  const gone = new Set<string>();
+  for (const ref of alteration.drop ?? []) gone.add(readRef(ref).id);
+  const set = { ...alteration.set };
+  if (gone.size > 0) {
+    const targets = (set.targets ?? chip.targets).filter((target) => !gone.has(idOf(target)));
+    const limits = (set.limits ?? chip.limits).filter((limit) => !namesAny(limit, gone));
+    if (targets.length < (set.targets ?? chip.targets).length) set.targets = targets;
+    if (limits.length < (set.limits ?? chip.limits).length) set.limits = limits;
+    if (set.targets) changes.push({ kind: 'set', key: 'targets', value: set.targets });
+    if (set.limits) changes.push({ kind: 'set', key: 'limits', value: set.limits });
+    delete set.targets;
+    delete set.limits;
+    for (const ref of alteration.drop ?? []) {
+      const { kind, id } = readRef(ref);
+      const list = LISTS[kind as keyof typeof LISTS];
+      if (list) changes.push({ kind: 'remove', list, id });
+    }
+  }
+  if (set.layers) changes.push(...layerChanges(chip, set.layers));
+  const known = {
+    channels: new Set(chip.channels.map((part) => part.id)),
+    chambers: new Set(chip.chambers.map((part) => part.id)),
+    vias: new Set(chip.vias.map((part) => part.id)),
+    ports: new Set(chip.ports.map((part) => part.id)),
+  };
+  const added = { channels: 0, chambers: 0, vias: 0, ports: 0 };
+  for (const { kind, value } of alteration.put ?? []) {
+    const list = LISTS[kind];
+    const there = known[list].has(value.id) && !gone.has(value.id);
+    const index = chip[list].filter((part) => !gone.has(part.id)).length + added[list];
+    if (!there) added[list] += 1;
+    changes.push(
+      (there
+        ? { kind: 'put', list, id: value.id, part: value }
+        : { kind: 'insert', list, index, part: value }) as Change,
+    );
+  }
+  for (const key of ['name', 'note', 'lengthUnit', 'outline', 'fluid', 'targets', 'limits'] as const)
+    if (set[key] !== undefined) changes.push({ kind: 'set', key, value: set[key] } as Change);
+  for (const { ref, to } of alteration.rename ?? []) {
+    const { kind, id } = readRef(ref);
+    const list = kind === 'layer' ? 'layers' : LISTS[kind as keyof typeof LISTS];
+    if (list && id !== to) changes.push({ kind: 'rename', list, id, to });
+  }
+  return { label: alteration.label.slice(0, 200), changes };
+}
+
+const idOf = (target: Target): string => ('port' in target ? target.port : target.channel);
+
+const namesAny = ({ where }: Limit, gone: ReadonlySet<string>): boolean =>
+  typeof where === 'string' ? gone.has(where) : (where?.some((id) => gone.has(id)) ?? false);
+
+function layerChanges(chip: Chip, layers: Chip['layers']): Change[] {
+  const changes: Change[] = [];
+  const wanted = new Set(layers.map((layer) => layer.id));
+  for (const { id } of chip.layers) if (!wanted.has(id)) changes.push({ kind: 'remove', list: 'layers', id });
+  let index = chip.layers.filter((layer) => wanted.has(layer.id)).length;
+  for (const layer of layers) {
+    const old = chip.layers.find((other) => other.id === layer.id);
+    if (old === layer) continue;
+    if (old) changes.push({ kind: 'put', list: 'layers', id: layer.id, part: layer });
+    else {
+      changes.push({ kind: 'insert', list: 'layers', index, part: layer });
+      index += 1;
+    }
+  }
+  return changes;
+}

@@ -1,0 +1,67 @@
+import { FIGURE_FACE, type Palette, SIZES } from '../look/tokens.ts';
+import { figure } from '../words/figure.ts';
+import { type Camera, inView, type Size, toScreen } from './camera.ts';
+import type { Shown } from './overlay.ts';
+import type { Room } from './room.ts';
+import type { Scene } from './scene.ts';
+import type { Spatial } from './spatial.ts';
+
+/** px: a stretch must be this long on screen before its figure is written along it. */
+const LEAST_LENGTH = 110;
+const MOST = 60;
+
+/** The figure that the colour stands for, along the longest run of each channel that is near enough. */
+export function drawChannelWords(
+  ctx: CanvasRenderingContext2D,
+  scene: Scene,
+  shown: Shown,
+  camera: Camera,
+  size: Size,
+  palette: Palette,
+  room: Room,
+  spatial: Spatial,
+): void {
+  if (shown.overlay === 'findings') return;
+  const near = spatial.channelsIn(inView(camera, size));
+  if (near.length > 400) return;
+  ctx.font = `${SIZES.note}px ${FIGURE_FACE}`;
+  ctx.textBaseline = 'middle';
+  ctx.textAlign = 'center';
+  let written = 0;
+  for (const index of near) {
+    for (let i = scene.first[index]!; i < scene.first[index + 1]! && written < MOST; i += 1) {
+      const stretch = scene.stretches[i]!;
+      const values = shown.values.get(stretch.channel.id);
+      const value = values?.[values.length === 1 ? 0 : Math.max(0, stretch.piece)];
+      if (value === null || value === undefined) continue;
+      let best = 0;
+      let at = 0;
+      for (let s = 0; s + 1 < stretch.path.length; s += 1) {
+        const a = stretch.path[s]!;
+        const b = stretch.path[s + 1]!;
+        const length = Math.hypot(b[0] - a[0], b[1] - a[1]) * camera.scale;
+        // words stand level: upright runs carry none
+        if (length > best && Math.abs(b[0] - a[0]) >= Math.abs(b[1] - a[1])) {
+          best = length;
+          at = s;
+        }
+      }
+      if (best < LEAST_LENGTH) continue;
+      const a = toScreen(camera, size, stretch.path[at]!);
+      const b = toScreen(camera, size, stretch.path[at + 1]!);
+      const x = (a[0] + b[0]) / 2;
+      const half = (Math.max(...stretch.width) / 2) * camera.scale;
+      const y = (a[1] + b[1]) / 2 - half - 9;
+      const text = figure(value, shown.kind, {
+        digits: 3,
+        ...(shown.kind === 'share' && { unit: '%', signed: shown.overlay === 'off target' }),
+      });
+      const wide = ctx.measureText(text).width;
+      if (Math.abs(b[1] - a[1]) > Math.abs(b[0] - a[0]) * 0.2 || x < 0 || x > size.width || y < 0) continue;
+      if (!room.take(x - wide / 2 - 3, y - 7, wide + 6, 14)) continue;
+      ctx.fillStyle = palette.soft;
+      ctx.fillText(text, x, y);
+      written += 1;
+    }
+  }
+}

@@ -1,0 +1,86 @@
+import { useEffect, useMemo, useReducer } from 'react';
+import { unitInPrint } from '../../solver/chip/units-format.ts';
+import { shades } from '../look/ramp.ts';
+import { onTheme, palette, scheme } from '../look/theme.ts';
+import { usePage } from '../page/context.tsx';
+import { useStore } from '../state/store.ts';
+import { figureIn, unitFor } from '../words/figure.ts';
+import { placeOn, shown } from './overlay.ts';
+
+const WIDTH = 188;
+
+/** The ramp with its figures and what they mean. */
+export function Legend() {
+  const { desk } = usePage();
+  const overlay = useStore(desk.view, (view) => view.overlay);
+  const solved = useStore(desk.solver.solved);
+  const chip = useStore(desk.project)!.document.chip;
+  const [, again] = useReducer((n: number) => n + 1, 0);
+  useEffect(() => onTheme(again), []);
+  const now = useMemo(() => shown(overlay, solved.chip ?? chip, solved.result), [overlay, solved, chip]);
+  if (now.overlay === 'findings' || now.values.size === 0)
+    return (
+      <p className="legend soft">
+        {now.overlay === 'findings'
+          ? now.values.size === 0
+            ? 'No finding names a channel.'
+            : 'Channels that a finding names are filled.'
+          : now.overlay === 'off target'
+            ? 'No target is given.'
+            : 'Colour comes with the first answer.'}
+      </p>
+    );
+  const unit = now.kind === 'share' ? '%' : unitFor(Math.max(Math.abs(now.from), Math.abs(now.to)), now.kind);
+  const colours = shades(scheme(), now.ramp);
+  const mark = (value: number): string => figureIn(value, unit, { digits: 3 });
+  const middle = (now.from + now.to) / 2;
+  const limitAt = now.limit === null ? null : placeOn(now, now.limit) * WIDTH;
+  const look = palette();
+  return (
+    <figure className="legend">
+      <svg
+        viewBox={`-6 -16 ${WIDTH + 40} 42`}
+        width={WIDTH + 40}
+        height={42}
+        role="img"
+        aria-label={`${now.says}, from ${mark(now.from)} to ${mark(now.to)} ${unitInPrint(unit)}`}
+      >
+        {colours.map((colour, i) => (
+          <rect
+            key={colour + String(i)}
+            x={(i * WIDTH) / colours.length}
+            y={0}
+            width={WIDTH / colours.length + 0.5}
+            height={8}
+            fill={colour}
+          />
+        ))}
+        <text x={0} y={20}>
+          {mark(now.from)}
+        </text>
+        {(limitAt === null || Math.abs(limitAt - WIDTH / 2) > 40) && (
+          <text x={WIDTH / 2} y={20} textAnchor="middle">
+            {mark(middle)}
+          </text>
+        )}
+        <text x={WIDTH} y={20} textAnchor="middle">
+          {mark(now.to)} {unitInPrint(unit)}
+        </text>
+        {limitAt !== null && (
+          <>
+            <path d={`M${limitAt} -3V11`} stroke={look.ink} strokeWidth={1.5} />
+            <text x={limitAt} y={-6} textAnchor="middle">
+              limit
+            </text>
+            {WIDTH - limitAt > 34 && (
+              <text x={limitAt} y={20} textAnchor="middle">
+                {mark(now.limit!)}
+              </text>
+            )}
+          </>
+        )}
+      </svg>
+      <figcaption>{now.says}</figcaption>
+    </figure>
+  );
+}

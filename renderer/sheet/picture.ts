@@ -1,0 +1,138 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import { boxOfParts, findPart } from '../edits/parts.ts';
+import type { Xy } from '../geometry/vector.ts';
+import { onTheme, palette, scheme } from '../look/theme.ts';
+import type { Desk } from '../state/desk.ts';
+import type { Workbench } from '../state/workbench.ts';
+import { Bodies } from './bodies.ts';
+import { drawChannelWords } from './channel-words.ts';
+import { drawEdge, drawScaleBar } from './edge.ts';
+import { paintHand } from './hand-paint.ts';
+import { drawPlaceWords, drawPorts, drawPortWords } from './marks.ts';
+import { type Shown, shown } from './overlay.ts';
+import { createPainter } from './painter.ts';
+import { Room } from './room.ts';
+import { makeScene, type Scene, shadesOf } from './scene.ts';
+import { type PlaceWords, type PortWords, placeWords, portWords } from './words.ts';
+
+/** Derived from chip and result, kept until one of them changes. */
+interface Derived {
+  readonly chip: Chip;
+  readonly key: readonly unknown[];
+  readonly scene: Scene;
+  readonly shown: Shown;
+  readonly bodies: Bodies;
+  readonly ports: readonly PortWords[];
+  readonly places: readonly PlaceWords[];
+}
+
+/** Joins the desk to the canvas: what changes is drawn at the next frame, once. */
+export function createPicture(container: HTMLDivElement, desk: Desk, bench: Workbench): () => void {
+  let derived: Derived | null = null;
+
+  const derive = (): Derived | null => {
+    const chip = desk.chip();
+    if (!chip) return null;
+    const solved = desk.solver.solved.get();
+    const { overlay } = desk.view.get();
+    const key = [chip, solved.graph, solved.result, overlay];
+    if (derived && key.every((value, i) => value === derived!.key[i])) return derived;
+    const old = derived;
+    const scene =
+      old && old.chip === chip && old.key[1] === solved.graph
+        ? old.scene
+        : makeScene(chip, solved.graph, solved.graphChip);
+    const coloured = shown(overlay, solved.chip ?? chip, solved.result);
+    derived = {
+      chip,
+      key,
+      scene,
+      shown: coloured,
+      bodies: new Bodies(scene, shadesOf(scene, coloured)),
+      ports: portWords(chip, solved.result),
+      places: placeWords(chip, solved.result, (where) => placeOf(chip, where)),
+    };
+    return derived;
+  };
+
+  const frame = (draw: (d: Derived, view: View) => void) => (): void => {
+    const d = derive();
+    const { camera, size } = desk.view.get();
+    if (d && camera && size.width > 0) draw(d, { camera, size });
+  };
+  type View = {
+    readonly camera: NonNullable<ReturnType<typeof desk.view.get>['camera']>;
+    readonly size: { width: number; height: number };
+  };
+
+  const painter = createPainter(container, desk.view.get().size, {
+    chip: (ctx) =>
+      frame((d, { camera, size }) => {
+        const look = palette();
+        ctx.fillStyle = look.sheet;
+        ctx.fillRect(0, 0, size.width, size.height);
+        drawEdge(ctx, d.chip, camera, size, look);
+        d.bodies.draw(ctx, camera, size, desk.spatial(), {
+          scheme: scheme(),
+          palette: look,
+          ramp: d.shown.ramp,
+        });
+      })(),
+    marks: (ctx) =>
+      frame((d, { camera, size }) => {
+        const look = palette();
+        drawPorts(ctx, d.chip, camera, size, look);
+        const room = new Room();
+        drawPlaceWords(ctx, d.places, camera, size, look, room);
+        drawPortWords(ctx, d.ports, camera, size, look, room);
+        drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, desk.spatial());
+        drawScaleBar(ctx, camera, size, look);
+      })(),
+    hand: (ctx) =>
+      frame((d, { camera, size }) => {
+        paintHand(ctx, d.chip, desk.view.get().selection, bench.preview(), camera, size, palette());
+      })(),
+  });
+
+  let seen = desk.view.get();
+  const stops = [
+    desk.view.subscribe(() => {
+      const view = desk.view.get();
+      const before = seen;
+      seen = view;
+      if (view.size !== before.size) painter.resize(view.size);
+      if (view.camera !== before.camera) painter.redraw('chip', 'marks', 'hand');
+      else if (view.overlay !== before.overlay) painter.redraw('chip', 'marks');
+      if (view.selection !== before.selection || view.tool !== before.tool) painter.redraw('hand');
+    }),
+    desk.project.subscribe(() => painter.redraw('chip', 'marks', 'hand')),
+    desk.solver.solved.subscribe(() => painter.redraw('chip', 'marks')),
+    bench.hand.subscribe(() => painter.redraw('hand')),
+    onTheme(() => painter.redraw('chip', 'marks', 'hand')),
+  ];
+  const fonts = (): void => painter.redraw('marks', 'chip');
+  document.fonts.addEventListener('loadingdone', fonts);
+  painter.drawNow();
+  return () => {
+    document.fonts.removeEventListener('loadingdone', fonts);
+    for (const stop of stops) stop();
+    painter.destroy();
+  };
+}
+
+/** Where a part, a piece or a place read from the chip lies; its middle. */
+export function placeOf(chip: Chip, where: string): Xy | null {
+  const id = where.replace(/#\d+$/, '');
+  for (const kind of ['channel', 'port', 'chamber', 'via']) {
+    const part = findPart(chip, where.includes(':') ? where : `${kind}:${id}`);
+    if (!part) continue;
+    if (part.kind === 'channel') {
+      const { path } = part.value;
+      const i = Math.floor((path.length - 1) / 2);
+      return [(path[i]![0] + path[i + 1]![0]) / 2, (path[i]![1] + path[i + 1]![1]) / 2];
+    }
+    const box = boxOfParts([part]);
+    return box && [(box.left + box.right) / 2, (box.bottom + box.top) / 2];
+  }
+  return null;
+}

@@ -1,0 +1,52 @@
+import { useLayoutEffect, useRef } from 'react';
+import { usePage } from '../page/context.tsx';
+import { useStore } from '../state/store.ts';
+import type { Preview } from '../tools/tool.ts';
+import { toScreen } from './camera.ts';
+
+/** What is being made, in figures that can be typed over, beside the pointer. */
+export function PointerNote() {
+  const { desk, bench } = usePage();
+  useStore(bench.hand);
+  const view = useStore(desk.view);
+  const chip = useStore(desk.project)!.document.chip;
+  const note = useRef<HTMLDivElement>(null);
+  const preview = bench.preview();
+  const place = anchor(preview, chip.outline.width);
+  useLayoutEffect(() => {
+    const element = note.current;
+    if (!element || !view.camera) return;
+    const [x, y] = toScreen(view.camera, view.size, place ?? [0, 0]);
+    const { offsetWidth: width, offsetHeight: height } = element;
+    const right = x + 18 + width < view.size.width;
+    const left = right ? x + 18 : x - 18 - width;
+    const top = y + 18 + height < view.size.height ? y + 18 : y - 18 - height;
+    element.style.left = `${Math.max(4, Math.min(left, view.size.width - width - 4))}px`;
+    element.style.top = `${Math.max(4, top)}px`;
+  });
+  if (!preview.readout && !preview.hint) return null;
+  return (
+    <div ref={note} className="pointer-note">
+      {preview.readout && (
+        <dl>
+          {preview.readout.map((line) => (
+            <div key={line.name} className="pair">
+              <dt>{line.name}</dt>
+              <dd className={line.typing ? 'typing' : undefined}>{line.typing || line.figure}</dd>
+              {line.fault && <dd className="fault">{line.fault}</dd>}
+            </div>
+          ))}
+        </dl>
+      )}
+      {preview.hint && <p>{preview.hint}</p>}
+    </div>
+  );
+}
+
+function anchor(preview: Preview, width: number): readonly [number, number] | null {
+  if (preview.cursor) return preview.cursor;
+  const part = preview.parts?.[0];
+  if (!part) return [width / 2, 0];
+  if (part.kind === 'channel') return part.value.path[0]!;
+  return part.kind === 'chamber' ? part.value.outline[0]! : part.value.at;
+}

@@ -1,0 +1,37 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import type { ChipEdit } from '../../solver/chip/edit.ts';
+import type { Graph } from '../../solver/chip/graph.ts';
+import type { Result } from '../../solver/chip/result.ts';
+import type { SolveOptions } from '../../solver/solve.ts';
+
+/** What the page tells the solving thread; `id` grows by one with every chip it means. */
+export type Order =
+  | { readonly kind: 'load'; readonly id: number; readonly chip: Chip; readonly options: SolveOptions }
+  | { readonly kind: 'edit'; readonly id: number; readonly edit: ChipEdit }
+  /** Solves the chip as it would be and leaves it as it is. */
+  | { readonly kind: 'try'; readonly id: number; readonly edit: ChipEdit }
+  /** Solves one variant after another and sends each result. */
+  | { readonly kind: 'sweep'; readonly id: number; readonly edits: readonly ChipEdit[] }
+  | { readonly kind: 'cancel'; readonly id: number };
+
+/** A refusal as it crosses the thread. */
+export interface Refused {
+  readonly what: string;
+  readonly where: string;
+  readonly remedy: string;
+}
+
+export type Outcome =
+  | { readonly ok: true; readonly result: Result }
+  | { readonly ok: false; readonly problem: Refused };
+
+export type News =
+  /** The drawing as the fluid reads it crosses once: 'same' where it is that of the answer before. */
+  | {
+      readonly kind: 'solved';
+      readonly id: number;
+      readonly graph: Graph | 'same' | null;
+      readonly outcome: Outcome;
+    }
+  | { readonly kind: 'tried'; readonly id: number; readonly outcome: Outcome }
+  | { readonly kind: 'swept'; readonly id: number; readonly index: number; readonly outcome: Outcome };

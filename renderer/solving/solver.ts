@@ -1,0 +1,133 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import type { ChipEdit } from '../../solver/chip/edit.ts';
+import type { Graph } from '../../solver/chip/graph.ts';
+import type { Result } from '../../solver/chip/result.ts';
+import type { SolveOptions } from '../../solver/solve.ts';
+import { createStore, type Store } from '../state/store.ts';
+import type { News, Order, Outcome, Refused } from './messages.ts';
+
+/** The newest answer and what it is of. */
+export interface Solved {
+  /** The chip that was answered; null before the first answer. */
+  readonly chip: Chip | null;
+  readonly result: Result | null;
+  /** Why there is no result. */
+  readonly problem: Refused | null;
+  /** The drawing as the fluid reads it, and the chip it was read from. */
+  readonly graph: Graph | null;
+  readonly graphChip: Chip | null;
+  /** The answer to a newer chip is on its way. */
+  readonly busy: boolean;
+}
+
+const NOTHING: Solved = {
+  chip: null,
+  result: null,
+  problem: null,
+  graph: null,
+  graphChip: null,
+  busy: false,
+};
+
+/** A thread as seen from here; a test may put a function in its place. */
+export interface Thread {
+  post(order: Order): void;
+  listen(listener: (news: News) => void): void;
+  end(): void;
+}
+
+export interface Solver {
+  readonly solved: Store<Solved>;
+  load(chip: Chip, options: SolveOptions): void;
+  edit(edit: ChipEdit, chip: Chip): void;
+  /** What would come of an edit. */
+  attempt(edit: ChipEdit): Promise<Outcome>;
+  /** Results of variants, in order as they come; returns how to stop. */
+  sweep(edits: readonly ChipEdit[], each: (index: number, outcome: Outcome) => void): () => void;
+  end(): void;
+}
+
+export function createSolver(thread: Thread): Solver {
+  const solved = createStore<Solved>(NOTHING);
+  /** Chips asked about and not yet answered, by number. */
+  const asked = new Map<number, Chip>();
+  const tries = new Map<number, (outcome: Outcome) => void>();
+  const sweeps = new Map<number, (index: number, outcome: Outcome) => void>();
+  let last = 0;
+  const next = (): number => {
+    last += 1;
+    return last;
+  };
+  let newest = 0;
+
+  thread.listen((news) => {
+    if (news.kind === 'tried') {
+      tries.get(news.id)?.(news.outcome);
+      tries.delete(news.id);
+      return;
+    }
+    if (news.kind === 'swept') {
+      sweeps.get(news.id)?.(news.index, news.outcome);
+      return;
+    }
+    const chip = asked.get(news.id);
+    if (!chip) return;
+    for (const id of [...asked.keys()]) if (id <= news.id) asked.delete(id);
+    const { outcome } = news;
+    const before = solved.get();
+    solved.set({
+      chip,
+      result: outcome.ok ? outcome.result : null,
+      problem: outcome.ok ? null : outcome.problem,
+      graph: news.graph === 'same' ? before.graph : news.graph,
+      graphChip: news.graph === null ? null : chip,
+      busy: news.id !== newest,
+    });
+  });
+
+  return {
+    solved,
+    load(chip, options) {
+      const id = next();
+      newest = id;
+      asked.clear();
+      asked.set(id, chip);
+      solved.set({ ...NOTHING, busy: true });
+      thread.post({ kind: 'load', id, chip, options });
+    },
+    edit(edit, chip) {
+      const id = next();
+      newest = id;
+      asked.set(id, chip);
+      solved.patch({ busy: true });
+      thread.post({ kind: 'edit', id, edit });
+    },
+    attempt(edit) {
+      const id = next();
+      return new Promise((resolve) => {
+        tries.set(id, resolve);
+        thread.post({ kind: 'try', id, edit });
+      });
+    },
+    sweep(edits, each) {
+      const id = next();
+      sweeps.set(id, each);
+      thread.post({ kind: 'sweep', id, edits });
+      return () => {
+        if (sweeps.delete(id)) thread.post({ kind: 'cancel', id });
+      };
+    },
+    end: () => thread.end(),
+  };
+}
+
+/** The real thread. */
+export function workerThread(): Thread {
+  const worker = new Worker(new URL('./worker.ts', import.meta.url), { type: 'module', name: 'solver' });
+  return {
+    post: (order) => worker.postMessage(order),
+    listen: (listener) =>
+      worker.addEventListener('message', (event: MessageEvent<News>) => listener(event.data)),
+    end: () => worker.terminate(),
+  };
+}

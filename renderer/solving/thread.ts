@@ -1,0 +1,107 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import { applyEdit } from '../../solver/chip/edit.ts';
+import type { Graph } from '../../solver/chip/graph.ts';
+import { readGraph } from '../../solver/chip/read-graph.ts';
+import { emptyMemory } from '../../solver/memory.ts';
+import { Problem } from '../../solver/problem/problem.ts';
+import { type SolveOptions, solve } from '../../solver/solve.ts';
+import type { News, Order, Outcome, Refused } from './messages.ts';
+
+/**
+ * The solving thread's behaviour, without a thread: orders in, news out. Edits that arrive while one is
+ * being solved are taken together, so that it is always the newest chip that is answered.
+ */
+export function solvingThread(
+  tell: (news: News) => void,
+  later: (work: () => void) => void,
+): (order: Order) => void {
+  let memory = emptyMemory();
+  let chip: Chip | null = null;
+  let options: SolveOptions = {};
+  let newest = 0;
+  let due = false;
+  let sent: Graph | null = null;
+  const cancelled = new Set<number>();
+
+  const outcomeOf = (which: Chip): Outcome => {
+    try {
+      return { ok: true, result: solve(which, options, memory) };
+    } catch (error) {
+      return { ok: false, problem: refused(error) };
+    }
+  };
+
+  const answer = (): void => {
+    due = false;
+    if (!chip) return;
+    const outcome = outcomeOf(chip);
+    let graph: Graph | null = null;
+    try {
+      graph = memory.graph(chip, readGraph);
+    } catch {
+      // the outcome says why there is none
+    }
+    tell({ kind: 'solved', id: newest, graph: graph && graph === sent ? 'same' : graph, outcome });
+    sent = graph;
+  };
+  const soon = (): void => {
+    if (due) return;
+    due = true;
+    later(answer);
+  };
+
+  const sweep = (id: number, variants: readonly Chip[], index: number): void => {
+    if (index >= variants.length || cancelled.delete(id)) return;
+    tell({ kind: 'swept', id, index, outcome: outcomeOf(variants[index]!) });
+    later(() => sweep(id, variants, index + 1));
+  };
+
+  return (order) => {
+    switch (order.kind) {
+      case 'load':
+        memory = emptyMemory();
+        chip = order.chip;
+        options = order.options;
+        newest = order.id;
+        sent = null;
+        return soon();
+      case 'edit':
+        if (!chip) return;
+        chip = applyEdit(chip, order.edit);
+        newest = order.id;
+        return soon();
+      case 'try': {
+        if (!chip) return;
+        let outcome: Outcome;
+        try {
+          outcome = outcomeOf(applyEdit(chip, order.edit));
+        } catch (error) {
+          outcome = { ok: false, problem: refused(error) };
+        }
+        return tell({ kind: 'tried', id: order.id, outcome });
+      }
+      case 'sweep': {
+        if (!chip) return;
+        const base = chip;
+        return later(() =>
+          sweep(
+            order.id,
+            order.edits.map((edit) => applyEdit(base, edit)),
+            0,
+          ),
+        );
+      }
+      case 'cancel':
+        cancelled.add(order.id);
+    }
+  };
+}
+
+function refused(error: unknown): Refused {
+  if (error instanceof Problem) return { what: error.what, where: error.where, remedy: error.remedy };
+  return {
+    what: 'The solver stopped at something it was not made for.',
+    where: '',
+    remedy: 'Undo the last change; the chip itself is kept.',
+  };
+}

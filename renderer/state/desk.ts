@@ -1,0 +1,244 @@
+import type { Client } from '../../main/contract/client.ts';
+import type { Mode, Output, ProjectState } from '../../main/contract/contract.ts';
+import type { Chip } from '../../solver/chip/chip.ts';
+import { type ChipEdit, makeEdit } from '../../solver/chip/edit.ts';
+import { Problem } from '../../solver/problem/problem.ts';
+import { toEdit } from '../edits/to-edit.ts';
+import { Spatial } from '../sheet/spatial.ts';
+import type { Solver } from '../solving/solver.ts';
+import type { Alteration } from '../tools/tool.ts';
+import { type Document, done, openDocument, redo, undo } from './document.ts';
+import { Keeper } from './keeper.ts';
+import { createStore, type Store } from './store.ts';
+import { FIRST_VIEW, type View } from './view.ts';
+
+/** The open project as the page holds it. */
+export interface Project {
+  readonly document: Document;
+  readonly name: string;
+  readonly path: string | null;
+  readonly mode: Mode;
+  readonly modeSays: string;
+  readonly notes: readonly string[];
+  /** What the host can take back beyond this window's own steps. */
+  readonly hostUndo: string | null;
+  readonly hostRedo: string | null;
+  /** ms since 1970 of the last edit acknowledged here; null before the first. */
+  readonly keptAt: number | null;
+  readonly keeping: boolean;
+}
+
+export type About = Output<'about'>;
+
+/** Everything a window works with. */
+export interface Desk {
+  readonly client: Client;
+  readonly solver: Solver;
+  readonly project: Store<Project | null>;
+  readonly view: Store<View>;
+  /** Waiting for the host to open something. */
+  readonly opening: Store<string>;
+  chip(): Chip | null;
+  spatial(): Spatial;
+  /** Makes the change, or says why not. */
+  alter(alteration: Alteration): boolean;
+  undo(): void;
+  redo(): void;
+  /** Labels of what would be taken back and done again. */
+  undoLabel(): string | null;
+  redoLabel(): string | null;
+  say(text: string): void;
+  /** Opens what a request to the host returns. */
+  open(label: string, request: () => Promise<ProjectState>): Promise<void>;
+  close(): Promise<void>;
+  /** Resolves when all that was done is kept. */
+  settled(): Promise<void>;
+}
+
+const wordsOf = (error: unknown): string =>
+  error instanceof Problem ? `${error.what} ${error.remedy}` : 'That did not work. Try it once more.';
+
+export function createDesk(client: Client, solver: Solver): Desk {
+  const project = createStore<Project | null>(null);
+  const view = createStore<View>(FIRST_VIEW);
+  const opening = createStore('');
+  let spatial: Spatial | null = null;
+  const say = (text: string): void => view.patch({ says: text });
+
+  const keeper = new Keeper(client, {
+    kept: (position) => {
+      const open = project.get();
+      if (open)
+        project.set({
+          ...open,
+          keptAt: Date.now(),
+          keeping: keeper.busy,
+          ...(open.document.done.length === 0 && { hostUndo: position.undo }),
+          ...(open.document.undone.length === 0 && { hostRedo: position.redo }),
+        });
+    },
+    refused: (problem) => {
+      say(`${problem.what} ${problem.remedy}`);
+      void client
+        .call('project.state', {})
+        .then(({ state }) => state && show(state))
+        .catch((error: unknown) => say(wordsOf(error)));
+    },
+  });
+
+  const show = (state: ProjectState): void => {
+    keeper.start(state.seq);
+    project.set({
+      document: openDocument(state.chip),
+      name: state.name,
+      path: state.path,
+      mode: state.mode,
+      modeSays: state.modeSays,
+      notes: state.notes,
+      hostUndo: state.undo,
+      hostRedo: state.redo,
+      keptAt: null,
+      keeping: false,
+    });
+    view.patch({
+      selection: [],
+      locked: new Set(),
+      tool: 'select',
+      camera: null,
+      layer: '',
+      panel: 'card',
+      says: state.modeSays || state.notes.join(' '),
+    });
+    solver.load(state.chip, {});
+  };
+
+  const put = (document: Document, edit: ChipEdit, more: Partial<Project> = {}): void => {
+    const open = project.get()!;
+    project.set({ ...open, document, keeping: true, ...more });
+    solver.edit(edit, document.chip);
+    const { selection } = view.get();
+    const left = selection.filter((ref) => stillThere(document.chip, ref));
+    view.patch({ says: '', ...(left.length !== selection.length && { selection: left }) });
+  };
+
+  const beyond = async (kind: 'undo' | 'redo'): Promise<void> => {
+    await keeper.settled();
+    try {
+      const { edit, ...position } = await client.call(kind === 'undo' ? 'project.undo' : 'project.redo', {});
+      const open = project.get();
+      if (!open) return;
+      const { chip, inverse } = makeEdit(open.document.chip, edit);
+      const step = kind === 'undo' ? { edit: inverse, inverse: edit } : { edit, inverse };
+      keeper.start(position.seq);
+      put(
+        {
+          chip,
+          done: kind === 'undo' ? [] : [...open.document.done, step],
+          undone: kind === 'undo' ? [...open.document.undone, step] : [],
+        },
+        edit,
+        { hostUndo: position.undo, hostRedo: position.redo, keeping: false, keptAt: Date.now() },
+      );
+    } catch (error) {
+      say(wordsOf(error));
+    }
+  };
+
+  return {
+    client,
+    solver,
+    project,
+    view,
+    opening,
+    say,
+    chip: () => project.get()?.document.chip ?? null,
+    spatial() {
+      const chip = project.get()!.document.chip;
+      if (spatial?.chip !== chip) spatial = new Spatial(chip);
+      return spatial;
+    },
+    alter(alteration) {
+      const open = project.get();
+      if (!open) return false;
+      if (open.mode === 'read-only') {
+        say(open.modeSays || 'This project is only to be read; save it under another name to change it.');
+        return false;
+      }
+      try {
+        const edit = toEdit(open.document.chip, alteration);
+        const document = done(open.document, edit);
+        put(document, edit, { hostRedo: null });
+        keeper.add({ kind: 'edit', edit });
+        return true;
+      } catch (error) {
+        say(wordsOf(error));
+        return false;
+      }
+    },
+    undo() {
+      const open = project.get();
+      if (!open) return;
+      const back = undo(open.document);
+      if (!back) {
+        if (open.hostUndo) void beyond('undo');
+        return;
+      }
+      put(back.document, back.edit);
+      keeper.add({ kind: 'undo' });
+    },
+    redo() {
+      const open = project.get();
+      if (!open) return;
+      const again = redo(open.document);
+      if (!again) {
+        if (open.hostRedo) void beyond('redo');
+        return;
+      }
+      put(again.document, again.edit);
+      keeper.add({ kind: 'redo' });
+    },
+    undoLabel: () => {
+      const open = project.get();
+      return open ? (open.document.done.at(-1)?.edit.label ?? open.hostUndo) : null;
+    },
+    redoLabel: () => {
+      const open = project.get();
+      return open ? (open.document.undone.at(-1)?.edit.label ?? open.hostRedo) : null;
+    },
+    async open(label, request) {
+      opening.set(label);
+      try {
+        await keeper.settled();
+        show(await request());
+      } catch (error) {
+        say(wordsOf(error));
+      } finally {
+        opening.set('');
+      }
+    },
+    async close() {
+      await keeper.settled();
+      await client.call('project.close', {}).catch((error: unknown) => say(wordsOf(error)));
+      project.set(null);
+      view.set({ ...FIRST_VIEW, size: view.get().size });
+    },
+    settled: () => keeper.settled(),
+  };
+}
+
+function stillThere(chip: Chip, ref: string): boolean {
+  const colon = ref.indexOf(':');
+  const id = ref.slice(colon + 1);
+  switch (ref.slice(0, colon)) {
+    case 'channel':
+      return chip.channels.some((part) => part.id === id);
+    case 'chamber':
+      return chip.chambers.some((part) => part.id === id);
+    case 'via':
+      return chip.vias.some((part) => part.id === id);
+    case 'port':
+      return chip.ports.some((part) => part.id === id);
+    default:
+      return true;
+  }
+}

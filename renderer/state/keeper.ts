@@ -1,0 +1,81 @@
+import type { Client } from '../../main/contract/client.ts';
+import type { Position } from '../../main/contract/contract.ts';
+import type { ChipEdit } from '../../solver/chip/edit.ts';
+import { Problem } from '../../solver/problem/problem.ts';
+
+/** One thing to be kept by the host, in the order it was done. */
+type Deed =
+  | { readonly kind: 'edit'; readonly edit: ChipEdit }
+  | { readonly kind: 'undo' }
+  | { readonly kind: 'redo' };
+
+export interface KeeperEvents {
+  /** Acknowledged: it is kept. */
+  kept(position: Position): void;
+  /** Refused: what was done after it is not kept either; the host's state is the true one. */
+  refused(problem: Problem): void;
+}
+
+/** Hands every deed to the host, one after another; the hand never waits for it. */
+export class Keeper {
+  private readonly client: Client;
+  private readonly events: KeeperEvents;
+  private readonly queue: Deed[] = [];
+  private seq = 0;
+  private working: Promise<void> | null = null;
+
+  constructor(client: Client, events: KeeperEvents) {
+    this.client = client;
+    this.events = events;
+  }
+
+  /** Begins anew at the host's position. */
+  start(seq: number): void {
+    this.queue.length = 0;
+    this.seq = seq;
+  }
+
+  /** True while something is not acknowledged yet. */
+  get busy(): boolean {
+    return this.working !== null;
+  }
+
+  get position(): number {
+    return this.seq;
+  }
+
+  add(deed: Deed): void {
+    this.queue.push(deed);
+    this.working ??= this.work();
+  }
+
+  /** Resolves when all that was added is acknowledged or refused. */
+  async settled(): Promise<void> {
+    while (this.working) await this.working;
+  }
+
+  private async work(): Promise<void> {
+    try {
+      for (let deed = this.queue[0]; deed; deed = this.queue[0]) {
+        const position = await this.hand(deed);
+        this.queue.shift();
+        this.seq = position.seq;
+        this.events.kept(position);
+      }
+    } catch (error) {
+      this.queue.length = 0;
+      this.events.refused(
+        error instanceof Problem
+          ? error
+          : new Problem('output', 'The last change could not be kept.', '', 'Do it once more.'),
+      );
+    } finally {
+      this.working = null;
+    }
+  }
+
+  private async hand(deed: Deed): Promise<Position> {
+    if (deed.kind === 'edit') return this.client.call('project.edit', { edit: deed.edit, seq: this.seq });
+    return this.client.call(deed.kind === 'undo' ? 'project.undo' : 'project.redo', {});
+  }
+}

@@ -1,0 +1,48 @@
+import type { Camera, Size } from '../sheet/camera.ts';
+import type { Overlay } from '../sheet/overlay.ts';
+import { FIRST_HABITS, type Habits, type ToolName } from '../tools/tool.ts';
+import type { Ref } from './ref.ts';
+
+export const TABS = ['outlets', 'channels', 'routes', 'junctions', 'findings'] as const;
+export type Tab = (typeof TABS)[number];
+
+/** A panel that takes the place of the card. */
+export type Panel = 'card' | 'chip' | 'plots' | 'trials' | 'hand over' | 'history' | 'keys' | 'about';
+
+/** What is of the view alone: nothing of it enters the project. */
+export interface View {
+  readonly selection: readonly Ref[];
+  /** Parts that the hand must not move; kept for this sitting. */
+  readonly locked: ReadonlySet<Ref>;
+  readonly tool: ToolName;
+  readonly overlay: Overlay;
+  /** Id of the layer drawn on; '' is the first. */
+  readonly layer: string;
+  /** Null until the sheet has a size: then the chip is fitted. */
+  readonly camera: Camera | null;
+  readonly size: Size;
+  readonly habits: Habits;
+  readonly tab: Tab;
+  readonly panel: Panel;
+  readonly palette: boolean;
+  /** One sentence about what was not done and why; '' where there is nothing to say. */
+  readonly says: string;
+  /** Speed with moving marks, where motion is allowed. */
+  readonly streamlines: boolean;
+}
+
+export const FIRST_VIEW: View = {
+  selection: [],
+  locked: new Set(),
+  tool: 'select',
+  overlay: 'wall shear',
+  layer: '',
+  camera: null,
+  size: { width: 0, height: 0 },
+  habits: FIRST_HABITS,
+  tab: 'outlets',
+  panel: 'card',
+  palette: false,
+  says: '',
+  streamlines: false,
+};

@@ -1,0 +1,85 @@
+import { useEffect, useMemo, useRef, useState } from 'react';
+import { usePage } from '../page/context.tsx';
+import { useStore } from '../state/store.ts';
+import { type Answer, plainText } from './answer.ts';
+import { MarginGraph } from './margin.tsx';
+import { verdicts } from './verdicts.ts';
+
+/** The five questions, always on screen. */
+export function VerdictBar() {
+  const { desk, commands } = usePage();
+  const project = useStore(desk.project)!;
+  const solved = useStore(desk.solver.solved);
+  const { chip } = project.document;
+  const answers = useMemo(
+    () =>
+      verdicts({
+        chip: solved.chip ?? chip,
+        result: solved.result,
+        trouble: solved.problem ? `${solved.problem.what} ${solved.problem.remedy}` : '',
+      }),
+    [chip, solved.chip, solved.result, solved.problem],
+  );
+  return (
+    <section className="verdicts" aria-label="The five answers" aria-busy={solved.busy}>
+      {answers.map((answer) => (
+        <Verdict key={answer.question} answer={answer} onCulprit={(ref) => commands.show(ref)} />
+      ))}
+      <Announcement answers={answers} busy={solved.busy} />
+    </section>
+  );
+}
+
+function Verdict({
+  answer,
+  onCulprit,
+}: {
+  readonly answer: Answer;
+  readonly onCulprit: (ref: string) => void;
+}) {
+  const { culprit } = answer;
+  const says = answer.says.map((run, i) =>
+    // biome-ignore lint/suspicious/noArrayIndexKey: runs of one sentence have their place alone
+    typeof run === 'string' ? <span key={i}>{run}</span> : <strong key={i}>{run.strong}</strong>,
+  );
+  return (
+    <article className="verdict" data-standing={answer.standing}>
+      <h2 className="verdict-question">{answer.question}</h2>
+      {culprit ? (
+        <button
+          type="button"
+          className="verdict-says"
+          title={plainText(answer.says)}
+          onClick={() => onCulprit(culprit)}
+        >
+          {says}
+        </button>
+      ) : (
+        <p className="verdict-says" title={plainText(answer.says)}>
+          {says}
+        </p>
+      )}
+      {answer.margin && <MarginGraph margin={answer.margin} />}
+    </article>
+  );
+}
+
+/** Says each new set of answers once, when the hand has stopped. */
+function Announcement({ answers, busy }: { readonly answers: readonly Answer[]; readonly busy: boolean }) {
+  const text = answers.map((answer) => `${answer.question} ${plainText(answer.says)}`).join(' ');
+  const [said, setSaid] = useState('');
+  const last = useRef('');
+  useEffect(() => {
+    if (busy || text === last.current) return;
+    const timer = setTimeout(() => {
+      last.current = text;
+      setSaid(text);
+    }, 900);
+    return () => clearTimeout(timer);
+  }, [text, busy]);
+  return (
+    <p className="aside" role="status" aria-live="polite">
+      {said}
+    </p>
+  );
+}
