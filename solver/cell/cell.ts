@@ -46,9 +46,24 @@ export interface CellFields {
   readonly wallAcross: Float32Array;
 }
 
-/** A solved cell. Lengths in the unit of the shape that was given; viscosity 1. */
+/** A shape of depth 1 solved for viscosity 1: what is kept, for all its copies. */
+export interface ShapeSolution {
+  readonly faces: number;
+  readonly asked: Accuracy;
+  readonly portMatrix: Float64Array;
+  readonly flowError: number;
+  readonly peakError: number | null;
+  readonly sharp: boolean;
+  readonly checks: CellChecks;
+  /** null where only the port matrix was kept. */
+  readonly fields: CellFields | null;
+}
+
+/** A solved cell, in the frame and unit of the shape that was given; viscosity 1. */
 export interface CellSolution {
   readonly faces: number;
+  /** Equal for turned, mirrored, moved and scaled copies of one shape. */
+  readonly key: string;
   /**
    * faces x faces by rows: flow out of the channel at face i, into the cell, per unit pressure on
    * face j. Symmetric, positive semidefinite, rows sum to zero; p Y p is the power dissipated. For a
@@ -59,10 +74,14 @@ export interface CellSolution {
   readonly flowError: number;
   /** Bound of the relative error of a peak; null where the cell has none. */
   readonly peakError: number | null;
+  /** The part of both bounds that comes from standing a rectangle in for another profile; 0 for rectangles. */
+  readonly profileError: number;
+  /** Depth of the extruded shape that was solved, in the caller's unit: the layer's own for rectangles. */
+  readonly depth: number;
   /** Re-entrant corners without fillet, where shear is unbounded: the cell then has no peak. */
   readonly sharp: boolean;
   readonly checks: CellChecks;
-  /** Of the copy that was solved; null where only the port matrix was kept. */
+  /** Of the copy that was solved, of depth 1; null where only the port matrix was kept. */
   readonly fields: CellFields | null;
   /** How that copy lies on the shape that was given; several where the shape is symmetric in itself. */
   readonly placements: readonly [Placement, ...Placement[]];

@@ -1,194 +1,60 @@
+import { diagonaliseTogether } from './diagonalise.ts';
+
 /**
- * Polynomials over the half depth, s = 0 at half depth and 1 at floor and lid, by symmetry even or
- * odd: in-plane velocity (1 - s^2) s^2k, velocity across the plan (1 - s^2) s^(2k+1), pressure s^2k.
- * Stiffness and mass over s are diagonalised together, so that in the new basis the velocity block of
- * Stokes flow falls apart into plane problems K + (lambda / H^2) M, one per mode.
+ * Polynomials over the half depth, s = 0 at half depth and 1 at floor and lid, by symmetry even or odd.
+ * With P_n the Legendre polynomials: velocity P_(n+1) - P_(n-1), which vanishes at s = 1, with n = 1, 3, 5,
+ * ... in the plane (even) and n = 2, 4, ... across it (odd); pressure P_0, P_2, ... scaled to integral of
+ * the square 1. As (P_(n+1) - P_(n-1))' = (2n + 1) P_n and the integral of P_a P_b over [0, 1] is
+ * 1/(2a + 1) for a = b and else 0 (a + b even), all integrals are closed forms. Stiffness and mass are
+ * diagonalised together, so that the velocity block of Stokes flow falls apart into plane problems
+ * K + (lambda / H^2) M, one per mode.
  */
 export interface DepthModes {
-  /** N, number of in-plane and of pressure modes. */
+  /** N, number of in-plane modes. */
   readonly count: number;
-  /** N, N - 1: eigenvalues, integral of Phi'^2 ds for integral of Phi^2 ds = 1. */
+  /** Of the in-plane modes Phi_k and the modes across X_m: integral of the slope squared for integral of the square 1. */
   readonly inPlaneLambda: Float64Array;
   readonly acrossLambda: Float64Array;
-  /** Coefficients of the eigenmodes: Phi_k = sum over l of value[l * N + k] (1 - s^2) s^2l. */
+  /** Phi_k = sum over l of value[l * N + k] (P_(2l+2) - P_2l); X_m alike on (P_(2l+3) - P_(2l+1)). */
   readonly inPlaneBasis: Float64Array;
-  /** (N-1) x (N-1) alike, on (1 - s^2) s^(2l+1). */
   readonly acrossBasis: Float64Array;
-  /** N x N: pressure mode j (orthonormal Legendre) = sum over l of value[l * N + j] s^2l. */
-  readonly pressureBasis: Float64Array;
-  /** N x N: integral of psi_j Phi_k ds at [j * N + k]; the first row is the mean of each velocity mode. */
+  /** Pressure modes x N: integral of psi_j Phi_k ds at [j * N + k]; the first row is the mean of each velocity mode. */
   readonly coupling: Float64Array;
-  /** N x (N-1): integral of psi_j X_m' ds at [j * (N-1) + m]. */
+  /** Pressure modes x modes across: integral of psi_j X_m' ds at [j * across + m]. */
   readonly acrossCoupling: Float64Array;
 }
 
-/** Integral over [0, 1] of a product of polynomials given by coefficients of 1, s, s^2, ... */
-function integral(a: readonly number[], b: readonly number[]): number {
-  let sum = 0;
-  for (let i = 0; i < a.length; i += 1)
-    for (let j = 0; j < b.length; j += 1) sum += (a[i] * b[j]) / (i + j + 1);
-  return sum;
-}
-
-const derivative = (a: readonly number[]): number[] => a.slice(1).map((value, i) => value * (i + 1));
-
-/** (1 - s^2) s^power by coefficients. */
-function bubble(power: number): number[] {
-  const a = new Array<number>(power + 3).fill(0);
-  a[power] = 1;
-  a[power + 2] = -1;
-  return a;
-}
-
-/** Combination of `parts` by column k of the n x n matrix `basis`. */
-function combine(parts: readonly (readonly number[])[], basis: Float64Array, k: number): number[] {
-  const n = parts.length;
-  const out = new Array<number>(Math.max(0, ...parts.map((part) => part.length))).fill(0);
-  for (let l = 0; l < n; l += 1) {
-    const part = parts[l];
-    for (let i = 0; i < part.length; i += 1) out[i] = out[i] + basis[l * n + k] * part[i];
+/** Modes on P_(n+1) - P_(n-1) for n = first, first + 2, ... */
+function eigenmodes(first: number, count: number): { lambda: Float64Array; basis: Float64Array } {
+  const stiffness = new Float64Array(count * count);
+  const mass = new Float64Array(count * count);
+  for (let l = 0; l < count; l += 1) {
+    const n = first + 2 * l;
+    stiffness[l * count + l] = 2 * n + 1;
+    mass[l * count + l] = 1 / (2 * n + 3) + 1 / (2 * n - 1);
+    if (l + 1 < count) mass[l * count + l + 1] = mass[(l + 1) * count + l] = -1 / (2 * n + 3);
   }
-  return out;
+  return diagonaliseTogether(stiffness, mass, count);
 }
 
 /**
- * Solves S v = lambda M v for symmetric S and positive definite M (n x n by rows): Cholesky of M, then
- * cyclic Jacobi rotations. Columns of the returned basis have v M v = 1, lambdas ascend.
- */
-export function diagonaliseTogether(
-  stiffness: Float64Array,
-  mass: Float64Array,
-  n: number,
-): { lambda: Float64Array; basis: Float64Array } {
-  const l = new Float64Array(n * n);
-  for (let i = 0; i < n; i += 1)
-    for (let j = 0; j <= i; j += 1) {
-      let sum = mass[i * n + j];
-      for (let k = 0; k < j; k += 1) sum -= l[i * n + k] * l[j * n + k];
-      l[i * n + j] = i === j ? Math.sqrt(sum) : sum / l[j * n + j];
-    }
-  // a = L^-1 S L^-T
-  const a = Float64Array.from(stiffness);
-  for (let side = 0; side < 2; side += 1) {
-    for (let c = 0; c < n; c += 1)
-      for (let i = 0; i < n; i += 1) {
-        let sum = a[i * n + c];
-        for (let k = 0; k < i; k += 1) sum -= l[i * n + k] * a[k * n + c];
-        a[i * n + c] = sum / l[i * n + i];
-      }
-    for (let i = 0; i < n; i += 1)
-      for (let j = 0; j < i; j += 1) {
-        const swap = a[i * n + j];
-        a[i * n + j] = a[j * n + i];
-        a[j * n + i] = swap;
-      }
-  }
-  const v = new Float64Array(n * n);
-  for (let i = 0; i < n; i += 1) v[i * n + i] = 1;
-  for (let sweep = 0; sweep < 30; sweep += 1) {
-    let off = 0;
-    for (let p = 0; p < n; p += 1) for (let q = 0; q < p; q += 1) off += a[p * n + q] ** 2;
-    if (off === 0) break;
-    for (let p = 0; p < n; p += 1)
-      for (let q = p + 1; q < n; q += 1) {
-        const apq = a[p * n + q];
-        if (apq === 0) continue;
-        const theta = (a[q * n + q] - a[p * n + p]) / (2 * apq);
-        const t = (theta < 0 ? -1 : 1) / (Math.abs(theta) + Math.sqrt(theta * theta + 1));
-        const c = 1 / Math.sqrt(t * t + 1);
-        const s = t * c;
-        for (let k = 0; k < n; k += 1) {
-          const x = a[k * n + p];
-          const y = a[k * n + q];
-          a[k * n + p] = c * x - s * y;
-          a[k * n + q] = s * x + c * y;
-        }
-        for (let k = 0; k < n; k += 1) {
-          const x = a[p * n + k];
-          const y = a[q * n + k];
-          a[p * n + k] = c * x - s * y;
-          a[q * n + k] = s * x + c * y;
-        }
-        a[p * n + q] = 0;
-        a[q * n + p] = 0;
-        for (let k = 0; k < n; k += 1) {
-          const x = v[k * n + p];
-          const y = v[k * n + q];
-          v[k * n + p] = c * x - s * y;
-          v[k * n + q] = s * x + c * y;
-        }
-      }
-  }
-  const order = Array.from({ length: n }, (_, i) => i).sort((i, j) => a[i * n + i] - a[j * n + j]);
-  const lambda = new Float64Array(n);
-  const basis = new Float64Array(n * n);
-  order.forEach((from, k) => {
-    lambda[k] = a[from * n + from];
-    // basis column = L^-T v
-    for (let i = n - 1; i >= 0; i -= 1) {
-      let sum = v[i * n + from];
-      for (let j = i + 1; j < n; j += 1) sum -= l[j * n + i] * basis[j * n + k];
-      basis[i * n + k] = sum / l[i * n + i];
-    }
-  });
-  return { lambda, basis };
-}
-
-/** Coefficients by powers of s of the Legendre polynomial of even degree 2j, scaled to integral 1 over [0, 1]. */
-function evenLegendre(j: number): number[] {
-  let before = [1];
-  let here = [0, 1];
-  if (j === 0) return [1];
-  for (let degree = 1; degree < 2 * j; degree += 1) {
-    const next = [0, ...here.map((value) => ((2 * degree + 1) / (degree + 1)) * value)];
-    before.forEach((value, i) => {
-      next[i] = next[i] - (degree / (degree + 1)) * value;
-    });
-    before = here;
-    here = next;
-  }
-  return here.map((value) => value * Math.sqrt(4 * j + 1));
-}
-
-function eigenmodes(parts: readonly (readonly number[])[]): {
-  lambda: Float64Array;
-  basis: Float64Array;
-} {
-  const n = parts.length;
-  const stiffness = new Float64Array(n * n);
-  const mass = new Float64Array(n * n);
-  for (let i = 0; i < n; i += 1)
-    for (let j = 0; j < n; j += 1) {
-      mass[i * n + j] = integral(parts[i], parts[j]);
-      stiffness[i * n + j] = integral(derivative(parts[i]), derivative(parts[j]));
-    }
-  return diagonaliseTogether(stiffness, mass, n);
-}
-
-/**
- * The modes for N = `count` >= 1 in-plane modes. By default N - 1 modes across and N for pressure, an
- * inf-sup stable choice; the counts can be given to show that others are not.
+ * The modes for N = `count` >= 1 in-plane modes. N - 1 modes across and N for pressure are an inf-sup
+ * stable choice; the counts can be given to show that others are not.
  */
 export function depthModes(count: number, across = count - 1, pressures = count): DepthModes {
-  const inPlaneParts = Array.from({ length: count }, (_, k) => bubble(2 * k));
-  const acrossParts = Array.from({ length: across }, (_, k) => bubble(2 * k + 1));
-  const inPlane = eigenmodes(inPlaneParts);
-  const acrossModes = eigenmodes(acrossParts);
-  const psi = Array.from({ length: pressures }, (_, j) => evenLegendre(j));
-  const pressureBasis = new Float64Array(pressures * pressures);
-  psi.forEach((polynomial, j) => {
-    for (let l = 0; l <= j; l += 1) pressureBasis[l * pressures + j] = polynomial[2 * l];
-  });
+  const inPlane = eigenmodes(1, count);
+  const acrossModes = eigenmodes(2, across);
   const coupling = new Float64Array(pressures * count);
   const acrossCoupling = new Float64Array(pressures * across);
   for (let j = 0; j < pressures; j += 1) {
-    for (let k = 0; k < count; k += 1)
-      coupling[j * count + k] = integral(psi[j], combine(inPlaneParts, inPlane.basis, k));
+    const scale = Math.sqrt(4 * j + 1);
+    for (let k = 0; k < count; k += 1) {
+      if (j > 0 && j <= count) coupling[j * count + k] += inPlane.basis[(j - 1) * count + k] / scale;
+      if (j < count) coupling[j * count + k] -= inPlane.basis[j * count + k] / scale;
+    }
     for (let m = 0; m < across; m += 1)
-      acrossCoupling[j * across + m] = integral(
-        psi[j],
-        derivative(combine(acrossParts, acrossModes.basis, m)),
-      );
+      if (j > 0 && j <= across)
+        acrossCoupling[j * across + m] = scale * acrossModes.basis[(j - 1) * across + m];
   }
   return {
     count,
@@ -196,8 +62,63 @@ export function depthModes(count: number, across = count - 1, pressures = count)
     acrossLambda: acrossModes.lambda,
     inPlaneBasis: inPlane.basis,
     acrossBasis: acrossModes.basis,
-    pressureBasis,
     coupling,
     acrossCoupling,
   };
+}
+
+const known = new Map<number, DepthModes>();
+
+/** The stable modes for N, made once. */
+export function standardModes(count: number): DepthModes {
+  let modes = known.get(count);
+  if (!modes) {
+    modes = depthModes(count);
+    known.set(count, modes);
+  }
+  return modes;
+}
+
+/** Values and slopes of all modes at one s in [-1, 1]. */
+export interface DepthValues {
+  /** N each: Phi_k and its slope. */
+  readonly inPlane: Float64Array;
+  readonly inPlaneSlope: Float64Array;
+  /** N - 1 each: X_m and its slope. */
+  readonly across: Float64Array;
+  readonly acrossSlope: Float64Array;
+  /** N: psi_j */
+  readonly pressure: Float64Array;
+}
+
+export function depthValues(depth: DepthModes, s: number): DepthValues {
+  const N = depth.count;
+  const A = depth.acrossLambda.length;
+  const P = new Float64Array(2 * N + 3);
+  P[0] = 1;
+  P[1] = s;
+  for (let n = 1; n + 1 < P.length; n += 1) P[n + 1] = ((2 * n + 1) * s * P[n] - n * P[n - 1]) / (n + 1);
+  const out: DepthValues = {
+    inPlane: new Float64Array(N),
+    inPlaneSlope: new Float64Array(N),
+    across: new Float64Array(A),
+    acrossSlope: new Float64Array(A),
+    pressure: new Float64Array(N),
+  };
+  for (let l = 0; l < N; l += 1) {
+    const n = 2 * l + 1;
+    for (let k = 0; k < N; k += 1) {
+      out.inPlane[k] += depth.inPlaneBasis[l * N + k] * (P[n + 1] - P[n - 1]);
+      out.inPlaneSlope[k] += depth.inPlaneBasis[l * N + k] * (2 * n + 1) * P[n];
+    }
+    out.pressure[l] = Math.sqrt(4 * l + 1) * P[2 * l];
+  }
+  for (let l = 0; l < A; l += 1) {
+    const n = 2 * l + 2;
+    for (let m = 0; m < A; m += 1) {
+      out.across[m] += depth.acrossBasis[l * A + m] * (P[n + 1] - P[n - 1]);
+      out.acrossSlope[m] += depth.acrossBasis[l * A + m] * (2 * n + 1) * P[n];
+    }
+  }
+  return out;
 }

@@ -1,5 +1,6 @@
 import type { CellSolution } from './cell.ts';
-import { depthValues, type FlowField, flowField } from './flow-field.ts';
+import { depthValues } from './depth.ts';
+import { type FlowField, flowField } from './flow-field.ts';
 import { emptySample, sampleAt } from './sample.ts';
 
 /** Middles of the three sides: exact to degree two on a triangle. */

@@ -1,6 +1,7 @@
 import { toCaller } from './canonical.ts';
-import type { CellSolution } from './cell.ts';
-import { depthValues, type FlowField, flowField, HALF } from './flow-field.ts';
+import type { CellFields, CellSolution } from './cell.ts';
+import { depthValues } from './depth.ts';
+import { type FlowField, flowField, HALF, mixFields } from './flow-field.ts';
 
 /** The largest wall shear in a cell. */
 export interface PeakShear {
@@ -43,7 +44,7 @@ export function peakShear(solution: CellSolution, pressures: ArrayLike<number>):
 }
 
 /** The same on one field, in the coordinates of the solved copy. */
-export function largestWallShear(field: FlowField): {
+export function largestWallShear(field: Omit<FlowField, 'placement'>): {
   value: number;
   x: number;
   y: number;
@@ -89,4 +90,12 @@ export function largestWallShear(field: FlowField): {
     }
   }
   return { value: Math.sqrt(most), x: mesh.x[node], y: mesh.y[node], place, height };
+}
+
+/** Peak for unit pressure on one face (from 0, of the solved copy) and none on the others. */
+export function peakOfFields(fields: CellFields, face: number): number {
+  const faces = fields.pressure.length / (fields.modes * fields.mesh.vertexCount) + 1;
+  const pressures = new Float64Array(faces);
+  pressures[face] = 1;
+  return largestWallShear(mixFields(fields, pressures)).value;
 }

@@ -1,5 +1,6 @@
 import { fromCaller } from './canonical.ts';
-import { type DepthValues, depthValues, type FlowField, HALF } from './flow-field.ts';
+import { type DepthValues, depthValues } from './depth.ts';
+import { type FlowField, HALF } from './flow-field.ts';
 import { locate, locatorOf, type Place } from './locate.ts';
 import { quadratic, quadraticGradient } from './triangle.ts';
 

@@ -1,6 +1,7 @@
 import { toCaller } from './canonical.ts';
 import type { CellSolution } from './cell.ts';
-import { depthValues, flowField } from './flow-field.ts';
+import { depthValues } from './depth.ts';
+import { flowField } from './flow-field.ts';
 import { emptySample, sampleAt } from './sample.ts';
 
 /** The largest strain rate in a cell. */

@@ -1,7 +1,8 @@
 import { toCaller } from './canonical.ts';
 import type { CellSolution } from './cell.ts';
-import { depthValues, type FlowField, flowField, HALF } from './flow-field.ts';
-import { emptySample, type Sample, type Sampler, sampleAt, sampler } from './sample.ts';
+import { depthValues } from './depth.ts';
+import { type FlowField, flowField, HALF } from './flow-field.ts';
+import { emptySample, type Sample, type Sampler, sampler } from './sample.ts';
 
 /** A path with the flow, step by step. */
 export interface Streamline {
@@ -18,6 +19,8 @@ export interface Streamline {
 
 /** A path is given up beyond this many steps. */
 const MOST_STEPS = 4000;
+/** Of a short stretch of face. */
+const INSIDE = 1e-4;
 
 /**
  * Streamlines at half depth from the faces where flow comes in, spaced so that each stands for an equal
@@ -58,6 +61,8 @@ export function streamlines(
   return out;
 }
 
+const speedOf = ({ velocity }: Sample): number => Math.hypot(velocity[0], velocity[1], velocity[2]);
+
 interface Start {
   readonly x0: number;
   readonly y0: number;
@@ -94,7 +99,11 @@ function inflow(field: FlowField): Start[] {
       const [x1, y1] = at((i + 1) / pieces);
       const [, , u, v] = at((i + 0.5) / pieces);
       const flux = v * (x1 - x0) - u * (y1 - y0);
-      if (flux > 0) out.push({ x0, y0, x1, y1, flux, face: mesh.boundaryTag[e] - 1 });
+      if (flux <= 0) continue;
+      // A hair inside, so that the start is not lost to rounding.
+      const nx = -(y1 - y0) * INSIDE;
+      const ny = (x1 - x0) * INSIDE;
+      out.push({ x0: x0 + nx, y0: y0 + ny, x1: x1 + nx, y1: y1 + ny, flux, face: mesh.boundaryTag[e] - 1 });
     }
   }
   return out;
@@ -116,7 +125,6 @@ export function streamline(
   const { scale } = solution.placements[0];
   // In depths: a thirtieth of the least of depth and mean gap of the plan.
   const step = 0.03 * Math.min(1, meanGap(field));
-  // Just inside, where the point lies on a face.
   if (!probe.at(x, y, s, sample)) return null;
   const points: number[] = [];
   const time: number[] = [];
@@ -127,7 +135,7 @@ export function streamline(
   const k = [0, 1, 2, 3].map(() => [0, 0, 0]);
   for (let count = 0; count < MOST_STEPS; count += 1) {
     if (!probe.at(position[0], position[1], position[2], sample)) break;
-    const speed = Math.hypot(...sample.velocity);
+    const speed = speedOf(sample);
     points.push(position[0], position[1], position[2]);
     time.push(t);
     stress.push(sample.strainRate);
@@ -139,7 +147,7 @@ export function streamline(
       next = advance(probe, sample, position, length, scale, k);
       if (next) {
         probe.at(next[0], next[1], next[2], sample);
-        mean = (speed + Math.hypot(...sample.velocity)) / 2;
+        mean = (speed + speedOf(sample)) / 2;
       } else length /= 2;
     }
     if (!next) {
@@ -172,7 +180,7 @@ function advance(
     const before = k[Math.max(0, stage - 1)];
     const at = from.map((value, i) => value + share * length * (stage ? before[i] : 0));
     if (Math.abs(at[2]) > 1 || !probe.at(at[0], at[1], at[2], sample)) return null;
-    const speed = Math.hypot(...sample.velocity);
+    const speed = speedOf(sample);
     if (!(speed > 0)) return null;
     k[stage][0] = (scale * sample.velocity[0]) / speed;
     k[stage][1] = (scale * sample.velocity[1]) / speed;

@@ -1,0 +1,61 @@
+import { canonical } from './canonical.ts';
+import { type Accuracy, type CellSolution, DEFAULT_ACCURACY, type ShapeSolution } from './cell.ts';
+import { checkCell } from './check-cell.ts';
+import { equivalentDepth } from './equivalent-depth.ts';
+import type { CellShape } from './shape.ts';
+import { solveShape } from './solve-shape.ts';
+import { type CellStore, serves } from './store.ts';
+
+/** Part of every key: raise it whenever results change, so that what older versions kept is not used. */
+export const CELL_VERSION = 1;
+
+/**
+ * Solves Stokes flow in a piece of the plan in three dimensions, or takes the solution of a copy of it
+ * from `store`. Throws `Problem` ('shape', 'memory', 'profile', 'too-many') naming `where`.
+ */
+export function solveCell(
+  shape: CellShape,
+  accuracy: Accuracy = DEFAULT_ACCURACY,
+  store?: CellStore,
+  where = '',
+): CellSolution {
+  checkCell(shape, where);
+  const equivalent = equivalentDepth(shape, where);
+  const copy = canonical({ ...shape, depth: equivalent.depth, profile: { kind: 'rectangle' } });
+  const key = `${CELL_VERSION} ${copy.key}`;
+  let solved: ShapeSolution | undefined = store?.get(key);
+  if (!solved || !serves(solved, accuracy)) {
+    solved = solveShape(copy.shape, accuracy, where);
+    store?.put(key, solved);
+  }
+  const { placements } = copy;
+  const { faces } = shape;
+  // A symmetric shape's result is the mean over its symmetries, so that copies agree whichever is met first.
+  const portMatrix = new Float64Array(faces * faces);
+  for (const { face, scale } of placements) {
+    const factor = scale ** 3 / placements.length;
+    for (let i = 0; i < faces; i += 1)
+      for (let j = 0; j < faces; j += 1)
+        portMatrix[face[i] * faces + face[j]] += factor * solved.portMatrix[i * faces + j];
+  }
+  return {
+    faces,
+    key,
+    portMatrix,
+    flowError: solved.flowError + equivalent.error,
+    peakError: solved.peakError,
+    profileError: equivalent.error,
+    depth: equivalent.depth,
+    sharp: solved.sharp,
+    checks: solved.checks,
+    fields: solved.fields,
+    placements,
+  };
+}
+
+/** The key under which a shape's solution is kept. */
+export function cellKey(shape: CellShape, where = ''): string {
+  checkCell(shape, where);
+  const { depth } = equivalentDepth(shape, where);
+  return `${CELL_VERSION} ${canonical({ ...shape, depth, profile: { kind: 'rectangle' } }).key}`;
+}
