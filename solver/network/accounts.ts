@@ -1,4 +1,3 @@
-import { edgeFlow } from './flows.ts';
 import type { PreparedNetwork } from './prepare.ts';
 import type { Fault, NetworkSolution, NetworkSpec } from './spec.ts';
 
@@ -13,18 +12,21 @@ interface Solved {
   readonly injected: Float64Array;
   /** m³/s that each given pressure makes flow in, per node. */
   readonly supplied: Float64Array;
+  /** Pa, in two parts whose differences are taken apart. */
   readonly coarse: Float64Array;
   readonly fine: Float64Array;
   /** m³/s of each edge; those without an answer are overwritten. */
   readonly flow: Float64Array;
+  /** m³/s of each edge by its law at these pressures. */
+  readonly lawFlow: Float64Array;
   readonly faults: readonly Fault[];
 }
 
 /** The solution as the caller sees it; its balances are drawn up anew from the flows reported. */
 export function accounts(spec: NetworkSpec, network: PreparedNetwork, solved: Solved): NetworkSolution {
-  const { edges, parts, conductance } = network;
+  const { edges, parts } = network;
   const { nodes, from, to, blockStart, driveNode } = edges;
-  const { injected, supplied, coarse, fine, flow, faults } = solved;
+  const { injected, supplied, coarse, fine, flow, lawFlow, faults } = solved;
   const state = new Uint8Array(parts.count);
   for (const { kind, nodes: own } of faults)
     state[parts.of[own[0]]] = kind === 'no-drive' ? AT_REST : UNKNOWN;
@@ -76,9 +78,8 @@ export function accounts(spec: NetworkSpec, network: PreparedNetwork, solved: So
     net[b] += q;
     passing[a] += Math.abs(q) / 2;
     passing[b] += Math.abs(q) / 2;
-    // Ducts and tubing by resistance, so that an error in either flow or pressure upsets the balance of power.
-    const inBlock = e >= blockStart[0] && e < blockStart[blockStart.length - 1];
-    dissipation += inBlock ? q * (coarse[a] - coarse[b] + (fine[a] - fine[b])) : (q * q) / conductance[e];
+    // By the law's flow, so that an error in either flow or pressure upsets the balance of power.
+    dissipation += lawFlow[e] * (coarse[a] - coarse[b] + (fine[a] - fine[b]));
   }
   let conservationResidual = 0;
   for (let i = 0; i < nodes; i += 1) {
@@ -91,7 +92,7 @@ export function accounts(spec: NetworkSpec, network: PreparedNetwork, solved: So
   for (let e = 0; e < flow.length; e += 1) {
     const part = parts.of[from[e]];
     if (state[part] !== ANSWERED || through[part] === 0) continue;
-    const off = Math.abs(flow[e] - edgeFlow(conductance, from, to, coarse, fine, e));
+    const off = Math.abs(flow[e] - lawFlow[e]);
     const scale = Math.max(passing[from[e]], passing[to[e]], RESOLVED * through[part]);
     lawResidual = Math.max(lawResidual, off / scale);
   }

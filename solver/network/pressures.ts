@@ -1,45 +1,56 @@
 import { factorise } from '../sparse/factorise.ts';
+import { SingularMatrix } from '../sparse/singular.ts';
 import { solve } from '../sparse/solve.ts';
-import type { PreparedNetwork } from './prepare.ts';
+import type { Imposed } from './imposed.ts';
+import { nodesOfPart, type PreparedNetwork } from './prepare.ts';
 
 /**
- * Σ over edges at i of g (pᵢ − pⱼ) = flow driven into i, at every node of unknown pressure.
+ * Σ over edges at i of g (pᵢ − pⱼ) = flow driven into i, at every node of unknown pressure, with the
+ * conductances of `network`.
  *
  * The answer comes as two numbers, p = coarse + fine: the second is what one step of iterative refinement
  * adds. Kept apart, their differences resolve far smaller pressure drops than p itself could.
  *
- * Unknowns of a part in `left` are left at zero.
+ * Parts that prove singular are added to those left out, with a fault each; their unknowns stay zero.
  *
- * @param left 1 for each part to leave out
- * @param injected m³/s driven into each node
- * @param coarse given pressures at the fixed nodes on entry; receives the others
- * @param fine receives the correction, 0 at the fixed nodes
- * @throws SingularMatrix with the number of the unknown
+ * @param coarse receives the pressures; those given are its own already
+ * @param fine receives the correction, 0 where a pressure is given
  */
 export function solvePressures(
+  nodeCount: number,
   network: PreparedNetwork,
-  left: Uint8Array,
-  injected: Float64Array,
+  drives: Imposed,
   coarse: Float64Array,
   fine: Float64Array,
 ): void {
-  const { unknown, nodeOf, parts, factor } = network;
-  assemble(network, left);
-  factorise(factor.symbolic, network.pattern.matrix, factor);
-  const count = nodeOf.length;
-  const right = new Float64Array(count);
-  const keep = () => {
-    for (let u = 0; u < count; u += 1) if (left[parts.of[nodeOf[u]]] === 1) right[u] = 0;
-  };
-  for (let u = 0; u < count; u += 1) coarse[nodeOf[u]] = 0;
-  imbalance(network, injected, coarse, right);
-  keep();
+  const { nodeOf, factor } = network;
+  factoriseDetermined(nodeCount, network, drives);
+  const right = new Float64Array(nodeOf.length);
+  imbalance(network, drives, coarse, right);
   solve(factor, right);
-  for (let u = 0; u < count; u += 1) coarse[nodeOf[u]] = right[u];
-  imbalance(network, injected, coarse, right);
-  keep();
+  for (let u = 0; u < nodeOf.length; u += 1) coarse[nodeOf[u]] = right[u];
+  imbalance(network, drives, coarse, right);
   solve(factor, right);
-  for (let i = 0; i < unknown.length; i += 1) fine[i] = unknown[i] < 0 ? 0 : right[unknown[i]];
+  fine.fill(0);
+  for (let u = 0; u < nodeOf.length; u += 1) fine[nodeOf[u]] = right[u];
+}
+
+/** Factors the matrix of the unknown pressures; parts that are singular are left out and named. */
+function factoriseDetermined(nodeCount: number, network: PreparedNetwork, drives: Imposed): void {
+  const { parts, nodeOf, pattern, factor } = network;
+  for (;;) {
+    assemble(network, drives.left);
+    try {
+      factorise(factor.symbolic, pattern.matrix, factor);
+      return;
+    } catch (error) {
+      if (!(error instanceof SingularMatrix)) throw error;
+      const part = parts.of[nodeOf[error.column]];
+      if (drives.left[part] === 1) throw error;
+      drives.left[part] = 1;
+      drives.faults.push({ kind: 'singular', nodes: nodesOfPart(nodeCount, parts, part), drives: [] });
+    }
+  }
 }
 
 /** The matrix of the unknown pressures from `network.conductance`; the identity in parts that are left out. */
@@ -67,14 +78,14 @@ export function assemble(network: PreparedNetwork, left: Uint8Array): void {
   }
 }
 
-/** What is driven into each unknown's node less what flows off it along the edges. */
+/** What is driven into each unknown's node less what flows off it; 0 in parts that are left out. */
 function imbalance(
   network: PreparedNetwork,
-  injected: Float64Array,
+  { injected, left }: Imposed,
   pressure: Float64Array,
   out: Float64Array,
 ): void {
-  const { edges, unknown, nodeOf, conductance } = network;
+  const { edges, parts, unknown, nodeOf, conductance } = network;
   const { from, to } = edges;
   for (let u = 0; u < nodeOf.length; u += 1) out[u] = injected[nodeOf[u]];
   for (let e = 0; e < conductance.length; e += 1) {
@@ -84,4 +95,6 @@ function imbalance(
     if (a >= 0) out[a] -= q;
     if (b >= 0) out[b] += q;
   }
+  if (!left.includes(1)) return;
+  for (let u = 0; u < nodeOf.length; u += 1) if (left[parts.of[nodeOf[u]]] === 1) out[u] = 0;
 }
