@@ -48,7 +48,7 @@ export interface Piece {
   readonly stop: number;
   /** Length that counts for resistance, nm: from rim to rim where an end lies in a port's hole or a chamber. */
   readonly length: number;
-  /** What was taken off at each end (inside a hole, a via or a chamber), nm. */
+  /** What of `path` was taken off at each end inside the hole of a port or via, nm; a chamber cuts `path` itself. */
   readonly trim: readonly [number, number];
   /** Mask widths at the trimmed ends, nm; linear between. */
   readonly width: readonly [Nm, Nm];
@@ -61,5 +61,7 @@ export interface Graph {
   readonly portSite: Int32Array;
   /** Cavity number of each site: sites joined by fluid. */
   readonly cavity: Int32Array;
+  /** Cavity number of each channel, in the chip's order; a channel swallowed by others has no piece but a cavity. */
+  readonly channelCavity: Int32Array;
   readonly findings: readonly Finding[];
 }

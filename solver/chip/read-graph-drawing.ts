@@ -24,7 +24,12 @@ export class Drawing {
   readonly #p = new Float64Array(CORNERS);
   readonly #q = new Float64Array(CORNERS);
 
-  constructor(chip: Chip, findings: Finding[]) {
+  /** What the bends had to say. */
+  readonly findings: readonly Finding[];
+
+  constructor(chip: Chip) {
+    const findings: Finding[] = [];
+    this.findings = findings;
     const numbers = layerNumbers(chip);
     const count = chip.channels.length;
     this.chip = chip;
@@ -94,4 +99,23 @@ export class Drawing {
     }
     return low;
   }
+
+  /** The same, but at a vertex the element that starts there. */
+  elementAfter(channel: number, s: number): number {
+    const id = this.elementAt(channel, s);
+    const last = this.elements.first[channel + 1]! - 1;
+    return id < last && this.elements.data[id * STRIDE + S1]! <= s + TOUCH ? id + 1 : id;
+  }
+}
+
+const drawings = new WeakMap<Chip, Drawing>();
+
+/** The drawing of a chip, made once: a chip never changes, an edit makes another. */
+export function drawingOf(chip: Chip): Drawing {
+  let drawing = drawings.get(chip);
+  if (!drawing) {
+    drawing = new Drawing(chip);
+    drawings.set(chip, drawing);
+  }
+  return drawing;
 }

@@ -2,7 +2,7 @@ import type { Finding } from '../problem/finding.ts';
 import type { Chip } from './chip.ts';
 import type { Graph, Piece, Site } from './graph.ts';
 import { readPlaces } from './read-graph-areas.ts';
-import { Drawing } from './read-graph-drawing.ts';
+import { drawingOf } from './read-graph-drawing.ts';
 import { joinChannels } from './read-graph-joins.ts';
 import { Links } from './read-graph-links.ts';
 import { readOverlaps } from './read-graph-overlaps.ts';
@@ -14,8 +14,8 @@ import { readSites } from './read-graph-sites.ts';
  * layers meet only in vias. Throws a Problem of kind 'place' where a port or via has no fluid.
  */
 export function readGraph(chip: Chip): Graph {
-  const findings: Finding[] = [];
-  const drawing = new Drawing(chip, findings);
+  const drawing = drawingOf(chip);
+  const findings: Finding[] = [...drawing.findings];
   const links = new Links(4 * chip.channels.length);
   const encounters = joinChannels(drawing, links);
   const places = readPlaces(drawing, links, findings);
@@ -24,11 +24,13 @@ export function readGraph(chip: Chip): Graph {
   let pieces: Piece[] = [];
   for (let c = 0; c < holds.length; c++) readPieces(drawing, links, c, holds[c]!, pieces);
   if (encounters.sameLine) pieces = dropDoubles(pieces, findings);
+  const cavity = cavities(drafts.length, pieces);
   return {
     sites: sitesWithArms(drafts, pieces),
     pieces,
     portSite,
-    cavity: cavities(drafts.length, pieces),
+    cavity,
+    channelCavity: Int32Array.from(holds, (list) => cavity[list[0]!.site]!),
     findings,
   };
 }

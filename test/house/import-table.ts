@@ -21,7 +21,7 @@ export const TABLE: Readonly<Record<string, Room>> = {
     ours: ['solver/problem', 'solver/sparse', 'solver/mesh', 'solver/fluid'],
   },
   'solver/chip': {
-    ours: ['solver/problem', 'solver/section', 'solver/fluid'],
+    ours: ['solver/problem', 'solver/mesh', 'solver/section', 'solver/fluid'],
     packages: ['zod', 'flatbush', 'clipper2-ts'],
   },
   'solver/cell': {

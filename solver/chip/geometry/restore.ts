@@ -1,0 +1,309 @@
+import type { Path64 } from 'clipper2-ts';
+import Flatbush from 'flatbush';
+import type { Edge } from '../../mesh/mesh.ts';
+import { alongArc, type Curve, nearest, pointAt, tangentAt } from './curve.ts';
+import { type Source, sagitta } from './patch.ts';
+import type { Grid } from './union.ts';
+
+/** Two true edges on the same line or circle, to this, nm. */
+const SAME = 0.05;
+
+/**
+ * The loop of lines and arcs that a polygon of the union stands for: each side is led back to the true
+ * edge under it, sides of one edge become one, and the corners are where neighbouring edges truly meet.
+ */
+export function restoreLoop(path: Path64, grid: Grid, edges: TrueEdges): Edge[] {
+  const n = path.length;
+  const x = path.map((p) => p.x / grid.scale + grid.x);
+  const y = path.map((p) => p.y / grid.scale + grid.y);
+  const slack = 1.5 / grid.scale;
+  let runs: Run[] = [];
+  for (let k = 0; k < n; k++) {
+    const j = k + 1 === n ? 0 : k + 1;
+    const source = sourceUnder(edges.near(x[k]!, y[k]!, x[j]!, y[j]!), x[k]!, y[k]!, x[j]!, y[j]!, slack);
+    const last = runs[runs.length - 1];
+    if (last && sameEdge(last.source, source)) {
+      last.x1 = x[j]!;
+      last.y1 = y[j]!;
+    } else runs.push({ source, x0: x[k]!, y0: y[k]!, x1: x[j]!, y1: y[j]! });
+  }
+  runs = joinRound(dropSlivers(joinRound(runs), slack));
+  if (runs.length === 1) return wholeCircle(runs[0]!);
+  return corners(runs);
+}
+
+/** The true edges of all bodies, with an index where there are many. */
+export class TrueEdges {
+  readonly #all: readonly Source[];
+  readonly #index: Flatbush | undefined;
+
+  constructor(all: readonly Source[]) {
+    this.#all = all;
+    if (all.length <= 48) return;
+    const index = new Flatbush(all.length);
+    for (const { curve: c } of all) {
+      const bend = c.curvature === 0 ? 0 : Math.min(2 / Math.abs(c.curvature), c.length);
+      index.add(
+        Math.min(c.x0, c.x1) - bend,
+        Math.min(c.y0, c.y1) - bend,
+        Math.max(c.x0, c.x1) + bend,
+        Math.max(c.y0, c.y1) + bend,
+      );
+    }
+    index.finish();
+    this.#index = index;
+  }
+
+  near(x0: number, y0: number, x1: number, y1: number): readonly Source[] {
+    if (!this.#index) return this.#all;
+    const x = (x0 + x1) / 2;
+    const y = (y0 + y1) / 2;
+    for (let reach = 40; ; reach *= 8) {
+      const found = this.#index.search(x - reach, y - reach, x + reach, y + reach);
+      if (found.length > 0 || reach > 1e10) return found.sort((a, b) => a - b).map((i) => this.#all[i]!);
+    }
+  }
+}
+
+interface Run {
+  source: Source;
+  x0: number;
+  y0: number;
+  x1: number;
+  y1: number;
+}
+
+/** First and last run of a loop are neighbours too. */
+function joinRound(runs: Run[]): Run[] {
+  const merged: Run[] = [];
+  for (const r of runs) {
+    const last = merged[merged.length - 1];
+    if (last && sameEdge(last.source, r.source)) {
+      last.x1 = r.x1;
+      last.y1 = r.y1;
+    } else merged.push(r);
+  }
+  if (merged.length > 1) {
+    const first = merged[0]!;
+    const last = merged[merged.length - 1]!;
+    if (sameEdge(first.source, last.source)) {
+      first.x0 = last.x0;
+      first.y0 = last.y0;
+      merged.pop();
+    }
+  }
+  return merged;
+}
+
+/** Sides left by rounding, or by the chords of an arc beside them, stand for no edge. */
+function dropSlivers(runs: Run[], slack: number): Run[] {
+  const n = runs.length;
+  if (n < 3) return runs;
+  const kept = runs.filter((r, k) => {
+    const length = Math.hypot(r.x1 - r.x0, r.y1 - r.y0);
+    const before = runs[(k + n - 1) % n]!.source.curve;
+    const after = runs[(k + 1) % n]!.source.curve;
+    return length > 4 * slack + chordError(before) + chordError(after);
+  });
+  return kept.length > 1 ? kept : runs;
+}
+
+function chordError(c: Curve): number {
+  return c.curvature === 0 ? 0 : 4 * sagitta(Math.abs(1 / c.curvature));
+}
+
+/** The true edge under a side: the one nearest to both its ends and its middle that runs the same way. */
+function sourceUnder(
+  sources: readonly Source[],
+  x0: number,
+  y0: number,
+  x1: number,
+  y1: number,
+  slack: number,
+): Source {
+  const dx = x1 - x0;
+  const dy = y1 - y0;
+  const mx = (x0 + x1) / 2;
+  const my = (y0 + y1) / 2;
+  let best = sources[0]!;
+  let least = Infinity;
+  for (const s of sources) {
+    const c = s.curve;
+    let off = 0;
+    if (c.curvature === 0) {
+      if (dx * c.ux + dy * c.uy <= 0) continue;
+      const a = (x0 - c.x0) * c.uy - (y0 - c.y0) * c.ux;
+      const b = (x1 - c.x0) * c.uy - (y1 - c.y0) * c.ux;
+      const m = (mx - c.x0) * c.ux + (my - c.y0) * c.uy;
+      const beyond = m < 0 ? -m : m > c.length ? m - c.length : 0;
+      off = Math.abs(a) + Math.abs(b) + beyond;
+    } else {
+      const d = nearest(c, mx, my);
+      const [tx, ty] = tangentAt(c, d);
+      if (dx * tx + dy * ty <= 0) continue;
+      const r = Math.abs(1 / c.curvature);
+      const free = sagitta(r) * 2;
+      off = arcOff(c, r, free, x0, y0) + arcOff(c, r, free, x1, y1) + arcOff(c, r, free, mx, my);
+      const [px, py] = pointAt(c, d);
+      off += Math.max(0, Math.hypot(px - mx, py - my) - free);
+    }
+    // a labelled edge wins where it coincides with an unlabelled one
+    if (off < least - slack || (off < least + slack && s.tag > best.tag)) {
+      least = Math.min(off, least);
+      best = s;
+    }
+  }
+  return best;
+}
+
+function arcOff(c: Curve, r: number, free: number, x: number, y: number): number {
+  return Math.max(0, Math.abs(Math.hypot(x - c.cx, y - c.cy) - r) - free);
+}
+
+function sameEdge(a: Source, b: Source): boolean {
+  if (a === b) return true;
+  if (a.tag !== b.tag) return false;
+  const p = a.curve;
+  const q = b.curve;
+  if (p.curvature === 0 && q.curvature === 0) {
+    if (p.ux * q.ux + p.uy * q.uy <= 0) return false;
+    return lineOff(p, q.x0, q.y0) <= SAME && lineOff(p, q.x1, q.y1) <= SAME && lineOff(q, p.x0, p.y0) <= SAME;
+  }
+  if (p.curvature * q.curvature <= 0) return false;
+  const r = Math.abs(1 / p.curvature);
+  const s = Math.abs(1 / q.curvature);
+  return Math.abs(r - s) <= SAME && Math.hypot(p.cx - q.cx, p.cy - q.cy) <= SAME;
+}
+
+function lineOff(c: Curve, x: number, y: number): number {
+  return Math.abs((x - c.x0) * c.uy - (y - c.y0) * c.ux);
+}
+
+/** Distance of a point from the line or circle that an edge lies on. */
+function supportOff(c: Curve, x: number, y: number): number {
+  if (c.curvature === 0) return lineOff(c, x, y);
+  return Math.abs(Math.hypot(x - c.cx, y - c.cy) - Math.abs(1 / c.curvature));
+}
+
+function corners(runs: readonly Run[]): Edge[] {
+  const n = runs.length;
+  const px: number[] = [];
+  const py: number[] = [];
+  for (let k = 0; k < n; k++) {
+    const before = runs[(k + n - 1) % n]!;
+    const after = runs[k]!;
+    const reach = Math.hypot(after.x0 - before.x1, after.y0 - before.y1);
+    const [vx, vy] = trueCorner(
+      before.source.curve,
+      after.source.curve,
+      (before.x1 + after.x0) / 2,
+      (before.y1 + after.y0) / 2,
+      reach,
+    );
+    px.push(vx);
+    py.push(vy);
+  }
+  const edges: Edge[] = [];
+  for (let k = 0; k < n; k++) {
+    const j = (k + 1) % n;
+    const c = runs[k]!.source.curve;
+    let bulge = 0;
+    if (c.curvature !== 0) {
+      const a0 = Math.atan2(py[k]! - c.cy, px[k]! - c.cx);
+      const a1 = Math.atan2(py[j]! - c.cy, px[j]! - c.cx);
+      let sweep = a1 - a0;
+      if (c.curvature > 0 && sweep < 0) sweep += 2 * Math.PI;
+      if (c.curvature < 0 && sweep > 0) sweep -= 2 * Math.PI;
+      bulge = Math.tan(sweep / 4);
+    }
+    edges.push({ x: px[k]!, y: py[k]!, bulge, tag: runs[k]!.source.tag });
+  }
+  return edges;
+}
+
+/** Where two true edges meet near (x, y). */
+function trueCorner(a: Curve, b: Curve, x: number, y: number, reach: number): [number, number] {
+  const error = chordError(a) + chordError(b);
+  const within = 40 * error + 4 * reach + 20;
+  let best: [number, number] | undefined;
+  let least = within;
+  const offer = (qx: number, qy: number) => {
+    const off = Math.hypot(qx - x, qy - y);
+    if (off < least) {
+      least = off;
+      best = [qx, qy];
+    }
+  };
+  // tangent edges meet at a shared end point better than at a computed crossing
+  for (const c of [a, b]) {
+    for (const [qx, qy] of [
+      [c.x0, c.y0],
+      [c.x1, c.y1],
+    ] as const) {
+      if (supportOff(a, qx, qy) <= SAME && supportOff(b, qx, qy) <= SAME) offer(qx, qy);
+    }
+  }
+  const shared = best;
+  best = undefined;
+  least = within;
+  crossSupports(a, b, offer);
+  const crossing = best as [number, number] | undefined;
+  if (crossing && !shallow(a, b, crossing)) return crossing;
+  return shared ?? crossing ?? [x, y];
+}
+
+function shallow(a: Curve, b: Curve, p: readonly [number, number]): boolean {
+  const [ax, ay] = directionAt(a, p[0], p[1]);
+  const [bx, by] = directionAt(b, p[0], p[1]);
+  return Math.abs(ax * by - ay * bx) < 0.02;
+}
+
+function directionAt(c: Curve, x: number, y: number): [number, number] {
+  return c.curvature === 0 ? [c.ux, c.uy] : tangentAt(c, alongArc(c, x, y));
+}
+
+function crossSupports(a: Curve, b: Curve, offer: (x: number, y: number) => void): void {
+  if (a.curvature === 0 && b.curvature === 0) {
+    const sine = a.ux * b.uy - a.uy * b.ux;
+    if (Math.abs(sine) < 1e-12) return;
+    const t = ((b.x0 - a.x0) * b.uy - (b.y0 - a.y0) * b.ux) / sine;
+    offer(a.x0 + a.ux * t, a.y0 + a.uy * t);
+    return;
+  }
+  if (a.curvature === 0 || b.curvature === 0) {
+    if (a.curvature === 0) crossLineCircle(a, b, offer);
+    else crossLineCircle(b, a, offer);
+    return;
+  }
+  const ra = Math.abs(1 / a.curvature);
+  const rb = Math.abs(1 / b.curvature);
+  const dx = b.cx - a.cx;
+  const dy = b.cy - a.cy;
+  const d = Math.hypot(dx, dy);
+  if (d === 0) return;
+  const along = (d * d + (ra - rb) * (ra + rb)) / (2 * d);
+  const half = Math.sqrt(Math.max(0, (ra - along) * (ra + along)));
+  for (const s of [-half, half]) {
+    offer(a.cx + (dx * along - dy * s) / d, a.cy + (dy * along + dx * s) / d);
+  }
+}
+
+function crossLineCircle(a: Curve, b: Curve, offer: (x: number, y: number) => void): void {
+  const r = Math.abs(1 / b.curvature);
+  const along = (b.cx - a.x0) * a.ux + (b.cy - a.y0) * a.uy;
+  const off = Math.abs((b.cx - a.x0) * a.uy - (b.cy - a.y0) * a.ux);
+  const half = Math.sqrt(Math.max(0, (r - off) * (r + off)));
+  for (const s of [along - half, along + half]) offer(a.x0 + a.ux * s, a.y0 + a.uy * s);
+}
+
+/** A loop that is one circle all round, as two halves. */
+function wholeCircle(run: Run): Edge[] {
+  const c = run.source.curve;
+  if (c.curvature === 0) return [];
+  const r = Math.abs(1 / c.curvature);
+  const bulge = c.curvature > 0 ? 1 : -1;
+  return [
+    { x: c.cx - r, y: c.cy, bulge, tag: run.source.tag },
+    { x: c.cx + r, y: c.cy, bulge, tag: run.source.tag },
+  ];
+}
