@@ -23,10 +23,10 @@ export interface SolveOptions {
 export function solve(chip: Chip, _options: SolveOptions = {}, memory: Memory = emptyMemory()): Result {
   const fluid = newtonian(fluidOf(chip.fluid));
   const graph = memory.graph(chip, readGraph);
-  const findings = [...graph.findings, ...checkDrives(chip, graph)];
+  const drives = checkDrives(chip, graph, fluid.density);
   const lumped = lump(chip, graph, fluid.viscosity, fluid.density, memory.ducts);
   const flow = memory.network(lumped.spec);
-  return report(chip, graph, fluid, lumped, flow, findings);
+  return report(chip, graph, fluid, lumped, flow, drives);
 }
 
 /** The fluid with its one viscosity. */

@@ -2,27 +2,60 @@ import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
 import type { Finding } from '../problem/finding.ts';
 import { Problem } from '../problem/problem.ts';
+import { driveOf } from './drives.ts';
+
+export interface DriveCheck {
+  readonly findings: readonly Finding[];
+  /** Cavities in which nothing flows, by number. */
+  readonly still: ReadonlySet<number>;
+}
+
+interface Part {
+  readonly flows: string[];
+  readonly pressures: string[];
+  readonly closed: string[];
+  sum: number;
+  /** Least and most of the pressures, Pa. */
+  low: number;
+  high: number;
+}
+
+/** Pressures that differ by less than this share of themselves are equal but for rounding. */
+const EQUAL = 1e-12;
 
 /**
  * Parts of the drawing whose pressure nothing fixes, in plain words, before anything is solved:
  * a part that only flows drive cannot be solved (Problem), a part that nothing drives stands still
- * (a finding). Two pressures at one place without tubing between contradict each other (Problem).
+ * (a finding), and so does one whose drives all hold the same pressure. Two pressures at one place
+ * without tubing between contradict each other (Problem).
  */
-export function checkDrives(chip: Chip, graph: Graph): Finding[] {
+export function checkDrives(chip: Chip, graph: Graph, density: number): DriveCheck {
   twoPressuresAtOnePlace(chip, graph);
-  const parts = new Map<number, { flows: string[]; pressures: string[]; closed: string[]; sum: number }>();
+  const parts = new Map<number, Part>();
   chip.ports.forEach((port, index) => {
     const cavity = graph.cavity[graph.portSite[index]!]!;
     let part = parts.get(cavity);
     if (!part) {
-      part = { flows: [], pressures: [], closed: [], sum: 0 };
+      part = {
+        flows: [],
+        pressures: [],
+        closed: [],
+        sum: 0,
+        low: Number.POSITIVE_INFINITY,
+        high: Number.NEGATIVE_INFINITY,
+      };
       parts.set(cavity, part);
     }
-    if (port.drive.kind === 'flow') {
+    const drive = driveOf(port, 1, density);
+    if (!drive) part.closed.push(port.id);
+    else if (drive.kind === 'flow') {
       part.flows.push(port.id);
-      part.sum += port.drive.flow;
-    } else if (port.drive.kind === 'closed') part.closed.push(port.id);
-    else part.pressures.push(port.id);
+      part.sum += drive.value;
+    } else {
+      part.pressures.push(port.id);
+      part.low = Math.min(part.low, drive.value);
+      part.high = Math.max(part.high, drive.value);
+    }
   });
   for (const part of parts.values()) {
     if (part.pressures.length > 0 || part.flows.length === 0) continue;
@@ -35,7 +68,16 @@ export function checkDrives(chip: Chip, graph: Graph): Finding[] {
         : 'Give one port of that cavity a pressure (0 Pa for an open outlet).',
     );
   }
-  return standingParts(graph, parts);
+  return standingParts(chip, graph, parts);
+}
+
+/** Whether something makes the fluid of this part move. */
+function moves(part: Part, chip: Chip): boolean {
+  if (part.high - part.low > EQUAL * Math.max(Math.abs(part.high), Math.abs(part.low))) return true;
+  return part.flows.some((id) => {
+    const { drive } = chip.ports.find((port) => port.id === id)!;
+    return drive.kind === 'flow' && drive.flow !== 0;
+  });
 }
 
 function twoPressuresAtOnePlace(chip: Chip, graph: Graph): void {
@@ -56,33 +98,44 @@ function twoPressuresAtOnePlace(chip: Chip, graph: Graph): void {
   });
 }
 
-/** A finding for every cavity that no port drives. */
-function standingParts(
-  graph: Graph,
-  parts: ReadonlyMap<number, { flows: string[]; pressures: string[]; closed: string[] }>,
-): Finding[] {
+/** A finding for every cavity that no port drives, or whose drives cancel. */
+function standingParts(chip: Chip, graph: Graph, parts: ReadonlyMap<number, Part>): DriveCheck {
+  const moving = new Map<number, boolean>();
+  for (const [cavity, part] of parts) moving.set(cavity, moves(part, chip));
   const members = new Map<number, Set<string>>();
   for (const piece of graph.pieces) {
-    const cavity = graph.cavity[piece.from]!;
-    const part = parts.get(cavity);
-    if (part && (part.pressures.length > 0 || part.flows.length > 0)) continue;
+    const cavity = graph.cavity[piece.from];
+    if (moving.get(cavity) === true) continue;
     const ids = members.get(cavity);
     if (ids) ids.add(piece.channel);
     else members.set(cavity, new Set([piece.channel]));
   }
   const findings: Finding[] = [];
   for (const [cavity, ids] of members) {
-    const closed = parts.get(cavity)?.closed ?? [];
-    const names = [...ids];
-    findings.push({
-      kind: 'unconnected',
-      severity: 'warn',
-      where: names[0]!,
-      says: `${list(names)} ${names.length === 1 ? 'is' : 'are'} not connected to any driven port${closed.length > 0 ? ` (${list(closed)} closed)` : ''}: nothing flows there.`,
-      do: 'Join it to the rest, open a port there, or delete it.',
-    });
+    findings.push(standingFinding([...ids], parts.get(cavity)));
   }
-  return findings;
+  return { findings, still: new Set(members.keys()) };
+}
+
+function standingFinding(names: readonly string[], part: Part | undefined): Finding {
+  const is = names.length === 1 ? 'is' : 'are';
+  if (part && part.pressures.length > 0) {
+    return {
+      kind: 'at-rest',
+      severity: 'warn',
+      where: names[0],
+      says: `Nothing flows in ${list(names)}: ${part.pressures.length === 1 ? `${part.pressures[0]} is the only port that is open` : `${list(part.pressures)} all hold the same pressure`}.`,
+      do: 'Give one of its ports another pressure, or a flow.',
+    };
+  }
+  const closed = part && part.closed.length > 0 ? ` (${list(part.closed)} closed)` : '';
+  return {
+    kind: 'unconnected',
+    severity: 'warn',
+    where: names[0],
+    says: `${list(names)} ${is} not connected to any driven port${closed}: nothing flows there.`,
+    do: 'Join it to the rest, open a port there, or delete it.',
+  };
 }
 
 /** "a", "a and b", "a, b and c", "a, b and 7 others". */

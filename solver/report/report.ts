@@ -3,12 +3,14 @@ import type { Graph } from '../chip/graph.ts';
 import type { CellResult, ChannelResult, PieceResult, PortResult, Result } from '../chip/result.ts';
 import { ductsBetween } from '../exposure/reach.ts';
 import type { Fluid } from '../fluid/fluid.ts';
+import type { DriveCheck } from '../lump/floating.ts';
 import type { Lumped } from '../lump/lump.ts';
 import { NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
 import { limitResults } from './limits.ts';
 import { pieceResult } from './pieces.ts';
+import { stillDucts } from './still.ts';
 import { targetResults } from './targets.ts';
 
 /** The solved network in the chip's own terms. */
@@ -18,20 +20,22 @@ export function report(
   fluid: Fluid & { readonly viscosity: number },
   lumped: Lumped,
   flow: NetworkSolution,
-  before: readonly Finding[],
+  drives: DriveCheck,
 ): Result {
+  const flows = ductFlows(graph, lumped, flow, drives);
   const pieces = lumped.stretches.map((stretch, index) =>
     pieceResult(
       stretch,
       lumped.ducts[index],
-      resolved(flow.ductFlow[index], flow.ductUnresolved[index]),
+      flows[index],
       flow.pressure[stretch.from] - flow.pressure[stretch.to] || 0,
       fluid.viscosity,
       fluid.density,
     ),
   );
   const channels = byChannel(chip, graph, lumped, pieces);
-  const ports = portResults(chip, lumped, flow);
+  const ports = portResults(chip, graph, lumped, flow, drives);
+  const total = ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0);
   const cells: CellResult[] = [];
   const between = (start: string, goal: string): Set<string> =>
     piecesBetween(chip, graph, lumped, flow, start, goal);
@@ -47,7 +51,7 @@ export function report(
     channels,
     cells,
     routes: [],
-    targets: targetResults(chip, ports, channels, flow.throughput),
+    targets: targetResults(chip, ports, channels, total),
     limits: limits.results,
     balance: {
       conservationResidual: flow.conservationResidual,
@@ -55,30 +59,56 @@ export function report(
       dissipation: flow.dissipation,
     },
     findings: [
-      ...before,
-      ...unresolvedFindings(lumped, graph, flow),
+      ...graph.findings,
+      ...drives.findings,
+      ...unresolvedFindings(lumped, graph, flows),
       ...limits.findings,
       ...idealNote(graph),
     ],
   };
 }
 
-/** Nothing at all is a flow of nought; what is there but too small for its digits is null. */
-function resolved(flow: number, unresolved: number): number | null {
-  if (flow === 0) return 0;
-  return unresolved === 1 || !Number.isFinite(flow) ? null : flow;
+/** Flow of every duct: 0 where it is joined so that nothing can flow, null where too small for its digits. */
+function ductFlows(
+  graph: Graph,
+  lumped: Lumped,
+  flow: NetworkSolution,
+  drives: DriveCheck,
+): (number | null)[] {
+  const still = stillDucts(lumped.spec);
+  return lumped.stretches.map(({ piece }, index) =>
+    still[index] === 1 || drives.still.has(graph.cavity[graph.pieces[piece].from])
+      ? 0
+      : resolved(flow.ductFlow[index], flow.ductUnresolved[index]),
+  );
 }
 
-function portResults(chip: Chip, lumped: Lumped, flow: NetworkSolution): PortResult[] {
-  return chip.ports.map((port, index) => {
+/** An exact nought is a coincidence of rounding where fluid could flow: no better resolved than its neighbours. */
+function resolved(flow: number, unresolved: number): number | null {
+  return unresolved === 1 || flow === 0 || !Number.isFinite(flow) ? null : flow;
+}
+
+function portResults(
+  chip: Chip,
+  graph: Graph,
+  lumped: Lumped,
+  flow: NetworkSolution,
+  drives: DriveCheck,
+): PortResult[] {
+  const flows = chip.ports.map((_port, index) => {
     const drive = lumped.portDrive[index];
-    const value = drive < 0 ? 0 : resolved(flow.driveFlow[drive], flow.driveUnresolved[drive]);
+    if (drive < 0 || drives.still.has(graph.cavity[graph.portSite[index]])) return 0;
+    return resolved(flow.driveFlow[drive], flow.driveUnresolved[drive]);
+  });
+  const total = flows.reduce<number>((sum, value) => sum + Math.max(0, value ?? 0), 0);
+  return chip.ports.map((port, index) => {
+    const value = flows[index];
     const pressure = flow.pressure[lumped.portNode[index]];
     return {
       id: port.id,
       pressure: Number.isFinite(pressure) ? pressure : 0,
       flow: value,
-      share: value === null || flow.throughput === 0 ? null : Math.abs(value) / flow.throughput,
+      share: value === null || total === 0 ? null : Math.abs(value) / total,
     };
   });
 }
@@ -96,11 +126,11 @@ function byChannel(
   return chip.channels.map((channel, index) => ({ id: channel.id, pieces: lists[index] }));
 }
 
-function unresolvedFindings(lumped: Lumped, graph: Graph, flow: NetworkSolution): Finding[] {
+function unresolvedFindings(lumped: Lumped, graph: Graph, flows: readonly (number | null)[]): Finding[] {
   const names: string[] = [];
   let count = 0;
   lumped.stretches.forEach((stretch, index) => {
-    if (resolved(flow.ductFlow[index], flow.ductUnresolved[index]) !== null) return;
+    if (flows[index] !== null) return;
     count += 1;
     const piece = graph.pieces[stretch.piece];
     if (names.length < 4) names.push(`${piece.channel}#${piece.number}`);
