@@ -17,7 +17,7 @@ export interface SectionElements {
   readonly perimeter: number;
   /** 1 for nodes on the wall; nodeCount */
   readonly wall: Uint8Array;
-  /** Wall edges: start, end, middle of each. */
+  /** Boundary edges of the mesh that are wall, by number. */
   readonly wallEdges: Int32Array;
   /** Integral of each function; nodeCount */
   readonly load: Float64Array;
@@ -31,12 +31,10 @@ export function sectionElements(mesh: Mesh, isWall: (tag: number) => boolean = (
   let perimeter = 0;
   mesh.boundaryTag.forEach((tag, e) => {
     if (!isWall(tag)) return;
+    edges.push(e);
     const edge = mesh.boundary.subarray(3 * e, 3 * e + 3);
-    edges.push(...edge);
     for (const node of edge) wall[node] = 1;
-    LINE_POINTS.forEach((t, q) => {
-      perimeter += LINE_WEIGHTS[q] * stretch(mesh, edge, t);
-    });
+    perimeter += edgeLength(mesh, edge);
   });
   const load = new Float64Array(mesh.nodeCount);
   let area = 0;
@@ -60,16 +58,19 @@ export function sectionElements(mesh: Mesh, isWall: (tag: number) => boolean = (
   };
 }
 
-const slopes = new Float64Array(3);
-
-/** Length of the curve per share t of a boundary edge (its start, end and middle node). */
-export function stretch(mesh: Mesh, edge: ArrayLike<number>, t: number): number {
-  edgeGradients(t, slopes);
-  let dx = 0;
-  let dy = 0;
-  for (let k = 0; k < 3; k += 1) {
-    dx += slopes[k] * mesh.x[edge[k]];
-    dy += slopes[k] * mesh.y[edge[k]];
-  }
-  return Math.hypot(dx, dy);
+/** Length of a boundary edge (its start, end and middle node), straight or curved. */
+function edgeLength(mesh: Mesh, edge: ArrayLike<number>): number {
+  const slopes = new Float64Array(3);
+  let length = 0;
+  LINE_POINTS.forEach((t, q) => {
+    edgeGradients(t, slopes);
+    let dx = 0;
+    let dy = 0;
+    for (let k = 0; k < 3; k += 1) {
+      dx += slopes[k] * mesh.x[edge[k]];
+      dy += slopes[k] * mesh.y[edge[k]];
+    }
+    length += LINE_WEIGHTS[q] * Math.hypot(dx, dy);
+  });
+  return length;
 }

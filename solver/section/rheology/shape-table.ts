@@ -82,25 +82,20 @@ export function shapeTable(elements: SectionElements, fluid: ScaledFluid, copies
     });
   }
 
+  /**
+   * The step that a step is solved from, always the same one, so that no number depends on what was
+   * asked for before: inwards to the Newtonian end (yield stress) or to the middle.
+   */
+  const first = model.kind === 'casson' ? tableEnds(fluid)[1] : 0;
+  const before = (index: number): number | null =>
+    index === first ? null : index + Math.sign(first - index);
+
   return {
     yieldStress,
     node(index) {
-      const known = solved.get(index);
-      if (known) return known;
-      // Walk from the nearest solved step; the first one of a yield-stress fluid is its nearly Newtonian end.
-      let from: number | null = null;
-      for (const have of solved.keys()) {
-        if (from === null || Math.abs(have - index) < Math.abs(from - index)) from = have;
-      }
-      if (from === null && model.kind === 'casson') {
-        from = tableEnds(fluid)[1];
-        solveAt(from, null);
-      }
-      if (from === null) solveAt(index, null);
-      else {
-        const step = Math.sign(index - from);
-        for (let k = from; k !== index; k += step) solveAt(k + step, k);
-      }
+      const missing: number[] = [];
+      for (let k: number | null = index; k !== null && !solved.has(k); k = before(k)) missing.push(k);
+      for (const k of missing.reverse()) solveAt(k, before(k));
       const node = solved.get(index);
       if (!node) throw new RangeError(`step ${index}`);
       return node;

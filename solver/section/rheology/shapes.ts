@@ -1,22 +1,36 @@
+import { etchedShape } from '../etched-shape.ts';
 import type { Profile } from '../profile.ts';
 import { closedTable } from './closed-table.ts';
 import { sectionElements } from './elements.ts';
 import { quarterRectangle, WALL } from './rectangle-mesh.ts';
 import type { ScaledFluid } from './scaled.ts';
+import { shapeElements, withFlat } from './shape-elements.ts';
 import { type ShapeTable, shapeTable } from './shape-table.ts';
 
 /** Solved shapes and the share of each: a section between two solved aspect ratios is interpolated. */
 export type ShapeMix = readonly { readonly table: ShapeTable; readonly share: number }[];
 
+/**
+ * A section as its tables see it. Of a flat middle so long that the sides know nothing of each other
+ *, `strip` metres are left out of `mix`: there the flow is that between plates.
+ */
+export interface SectionParts {
+  readonly mix: ShapeMix;
+  readonly strip: number;
+  readonly plates: ShapeMix;
+}
+
 /** Tables of one scaled fluid, by shape. */
 export interface ShapeTables {
-  mixOf(profile: Profile, width: number, depth: number): ShapeMix;
+  partsOf(profile: Profile, width: number, depth: number, where: string): SectionParts;
 }
+
+type Etched = Exclude<Profile, { kind: 'polygon' }>;
 
 /** Step of the logarithm of the aspect ratio; cubic interpolation between is within 1e-4 (checked). */
 const ASPECT_STEP = 0.25;
-/** Beyond an aspect ratio of e^4 = 55 rectangles go over into plates, linearly in the aspect ratio. */
-const SHALLOWEST = 16;
+/** Flatter or steeper than e^±4, triangles and ellipses keep their flow per wall stress: the last table serves. */
+const LAST_STEP = 16;
 /** Cells over the half depth of a rectangle. */
 const ACROSS = 8;
 
@@ -29,33 +43,43 @@ export function shapeTables(fluid: ScaledFluid): ShapeTables {
     kept.set(key, made);
     return made;
   };
-  const rectangle = (step: number): ShapeTable =>
-    keep(`rectangle ${Math.abs(step)}`, () => {
-      const mesh = quarterRectangle(Math.exp(Math.abs(step) * ASPECT_STEP), ACROSS);
-      return shapeTable(
-        sectionElements(mesh, (tag) => tag === WALL),
-        fluid,
-        4,
+  const one = (table: ShapeTable): ShapeMix => [{ table, share: 1 }];
+  const plates = one(closedTable('plates', fluid));
+
+  /** The table of a profile of unit depth and this width. */
+  const tableOf = (profile: Etched, width: number): ShapeTable => {
+    if (profile.kind === 'rectangle') {
+      const aspect = Math.max(width, 1 / width);
+      return keep(`rectangle ${aspect.toPrecision(12)}`, () =>
+        shapeTable(
+          sectionElements(quarterRectangle(aspect, ACROSS), (tag) => tag === WALL),
+          fluid,
+          4,
+        ),
       );
-    });
+    }
+    const shape = withFlat(etchedShape(profile, width, 1, ''));
+    return keep(shape.key, () => shapeTable(shapeElements(shape, ''), fluid, 2));
+  };
+  const between = (profile: Etched, at: number): ShapeMix =>
+    cubicMix(at, (step) =>
+      tableOf(profile, Math.exp(Math.min(Math.max(step, -LAST_STEP), LAST_STEP) * ASPECT_STEP)),
+    );
+
   return {
-    mixOf(profile, width, depth) {
-      switch (profile.kind) {
-        case 'circle':
-          return [{ table: keep('tube', () => closedTable('tube', fluid)), share: 1 }];
-        case 'rectangle': {
-          const at = Math.abs(Math.log(width / depth)) / ASPECT_STEP;
-          if (at < SHALLOWEST) return cubicMix(at, rectangle);
-          const share = Math.exp((SHALLOWEST - at) * ASPECT_STEP);
-          const plates = keep('plates', () => closedTable('plates', fluid));
-          return [
-            { table: rectangle(SHALLOWEST), share },
-            { table: plates, share: 1 - share },
-          ];
-        }
-        default:
-          throw new RangeError(profile.kind);
+    partsOf(profile, width, depth, where) {
+      if (profile.kind === 'polygon') throw new RangeError(where);
+      if (profile.kind === 'circle') {
+        return { mix: one(keep('tube', () => closedTable('tube', fluid))), strip: 0, plates };
       }
+      const wide = profile.kind === 'rectangle' ? Math.max(width, depth) : width;
+      const deep = profile.kind === 'rectangle' ? Math.min(width, depth) : depth;
+      const { extra } = etchedShape(profile, wide, deep, where);
+      if (extra > 0) {
+        const cut = wide / deep - extra;
+        return { mix: one(tableOf(profile, cut)), strip: extra * deep, plates };
+      }
+      return { mix: between(profile, Math.log(wide / deep) / ASPECT_STEP), strip: 0, plates };
     },
   };
 }

@@ -56,31 +56,70 @@ export function thinSection(
 ): ThinSection {
   const section = sectionOf(profile, width, depth, where);
   const fluid = scaledFluid(shear);
-  const mix = tablesOf(fluid).mixOf(profile, width, depth);
-  const fluidity = mixedFluidity(fluid, mix);
-  const yieldStress = mixed(mix, (table) => table.yieldStress);
-  const perGradient = section.meanShear / fluid.stress;
-  const conductance = section.conductance / fluid.viscosity;
-  const at = new Float64Array(2);
-  let last = 1 / perGradient;
+  const { mix, strip, plates } = tablesOf(fluid).partsOf(profile, width, depth, where);
+  // The strip between plates, and what is left of the section without it.
+  const gap = Math.min(section.width, section.depth);
+  const stripConductance = (strip * gap ** 3) / 12;
+  const conductance = section.conductance - stripConductance;
+  const radius = (section.area - strip * gap) / (section.perimeter - 2 * strip);
+  const main = partFlow(fluid, mix, conductance, radius);
+  const side = strip > 0 ? partFlow(fluid, plates, stripConductance, gap / 2) : null;
+  const yieldGradient = Math.min(main.yieldGradient, side?.yieldGradient ?? Number.POSITIVE_INFINITY);
+  const two = new Float64Array(2);
 
   const flow = (gradient: number, out: Float64Array): void => {
-    fluidity(gradient * perGradient, at);
-    out[0] = conductance * gradient * (at[0] + LEAK);
-    out[1] = conductance * (at[0] * (1 + at[1]) + LEAK);
+    main.flow(gradient, out);
+    if (!side) return;
+    side.flow(gradient, two);
+    out[0] += two[0];
+    out[1] += two[1];
   };
   return {
     section,
-    yieldGradient: yieldStress / perGradient,
+    yieldGradient,
     flow,
     gradient(wanted, out) {
-      inverse(flow, wanted, last, out);
-      // Flows are asked for in small steps: the answer is the best next guess.
-      if (out[0] > 0) last = out[0];
+      inverse(flow, wanted, (wanted * fluid.viscosity) / section.conductance, out);
+    },
+    peaks(gradient) {
+      const { stress, velocity } = main.peaks(gradient);
+      main.flow(gradient, two);
+      const own = two[0];
+      flow(gradient, two);
+      // Greatest velocity over the mean of the part, then over the mean of the whole.
+      const share = (section.conductance / conductance) * (own > 0 ? own / two[0] : 1);
+      return {
+        stress: section.peakShear === null ? null : (section.peakShear / section.meanShear) * stress,
+        velocity: section.peakVelocity * velocity * share,
+      };
+    },
+  };
+}
+
+interface PartFlow {
+  readonly yieldGradient: number;
+  flow(gradient: number, out: Float64Array): void;
+  /** Peak over mean wall stress and velocity, each over the same of a Newtonian fluid. */
+  peaks(gradient: number): { readonly stress: number; readonly velocity: number };
+}
+
+/** @param conductance Newtonian, m⁴; `radius` area over perimeter, m */
+function partFlow(fluid: ScaledFluid, mix: ShapeMix, conductance: number, radius: number): PartFlow {
+  const fluidity = mixedFluidity(fluid, mix);
+  const yieldStress = mixed(mix, (table) => table.yieldStress);
+  const perGradient = radius / fluid.stress;
+  const unit = conductance / fluid.viscosity;
+  const at = new Float64Array(2);
+  const [low, high] = tableEnds(fluid);
+  return {
+    yieldGradient: yieldStress / perGradient,
+    flow(gradient, out) {
+      fluidity(gradient * perGradient, at);
+      out[0] = unit * gradient * (at[0] + LEAK);
+      out[1] = unit * (at[0] * (1 + at[1]) + LEAK);
     },
     peaks(gradient) {
       const x = stepOf(fluid, gradient * perGradient, yieldStress);
-      const [low, high] = tableEnds(fluid);
       const inside = Number.isNaN(x) ? low : Math.min(Math.max(x, low), high);
       const i = Math.min(Math.floor(inside), Math.max(low, high - 1));
       const s = low === high ? 0 : inside - i;
@@ -88,11 +127,7 @@ export function thinSection(
         mixed(mix, (table) => table.node(k)[of]);
       const between = (of: 'peakStress' | 'peakVelocity'): number =>
         s === 0 ? value(i, of) : (1 - s) * value(i, of) + s * value(i + 1, of);
-      return {
-        stress:
-          section.peakShear === null ? null : (section.peakShear / section.meanShear) * between('peakStress'),
-        velocity: section.peakVelocity * between('peakVelocity'),
-      };
+      return { stress: between('peakStress'), velocity: between('peakVelocity') };
     },
   };
 }

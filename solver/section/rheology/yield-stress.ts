@@ -90,12 +90,11 @@ function areaBeyond(parts: Float64Array, r: number): number {
 
 /** x0 y0 x1 y1 of straight pieces along the wall, curved edges in eight. */
 function wallChords(elements: SectionElements): Float64Array {
-  const { x, y } = elements.mesh;
-  const { wallEdges } = elements;
+  const { x, y, boundary } = elements.mesh;
   const out: number[] = [];
   const n = new Float64Array(3);
-  for (let e = 0; e < wallEdges.length; e += 3) {
-    const [a, b, m] = wallEdges.subarray(e, e + 3);
+  for (const e of elements.wallEdges) {
+    const [a, b, m] = boundary.subarray(3 * e, 3 * e + 3);
     const bend = Math.hypot(x[a] + x[b] - 2 * x[m], y[a] + y[b] - 2 * y[m]);
     const cuts = bend > 1e-12 * Math.hypot(x[b] - x[a], y[b] - y[a]) ? 8 : 1;
     const point = (s: number): [number, number] => {
