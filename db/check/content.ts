@@ -58,7 +58,7 @@ export function readContent(store: Store): Content {
 export function checkStructure(store: Store, version: number): void {
   const strange = strangeLayout(store, version);
   if (strange.length > 0) throw new Damage(['the file holds parts that do not belong in a project']);
-  if (store.pragma('quick_check(1)') !== 'ok') throw new Damage(['its inner structure is broken']);
+  if (store.pragma('integrity_check(1)') !== 'ok') throw new Damage(['its inner structure is broken']);
   if (store.all('PRAGMA foreign_key_check').length > 0) throw new Damage(['a trial lost its result']);
 }
 

@@ -3,15 +3,16 @@ import { applyEdit } from '../../solver/chip/edit.ts';
 import { readEdit } from '../../solver/chip/edit-read.ts';
 import { readChip } from '../../solver/chip/schema-chip.ts';
 import { assemble } from '../check/content.ts';
-import { chipDigest, LIST_KINDS, type PartKind, partHash } from '../chip/parts.ts';
+import { chipDigest, LIST_KINDS, type PartKind } from '../chip/parts.ts';
 import { changesOf, type Step, stepHash } from '../journal/journal.ts';
-import { sameBytes } from '../store/hash.ts';
+import { NO_HASH, sameBytes } from '../store/hash.ts';
 import { unpack } from '../store/pack.ts';
 import type { Seal } from '../store/seals.ts';
 import type { Row } from '../store/store.ts';
 import { attempt } from './rows.ts';
 
-export type FoundParts = ReadonlyMap<string, ReadonlyMap<number, Row>>;
+/** Whole rows of the chip by kind and place. */
+export type FoundParts = ReadonlyMap<string, Row>;
 
 export interface SalvagedChip {
   readonly chip: Chip;
@@ -22,51 +23,71 @@ export interface SalvagedChip {
 }
 
 /** Steps in order from the first that is there, as far as each follows from the one before. */
-export function unbroken(steps: ReadonlyMap<number, Step>, from: number, hash: Uint8Array | null): Step[] {
+export function unbroken(steps: ReadonlyMap<number, Step>, from: number, hash: Uint8Array): Step[] {
   const chain: Step[] = [];
   let before = hash;
   for (let seq = from; ; seq += 1) {
     const step = steps.get(seq);
-    if (!step || (before && !sameBytes(step.hash, stepHash(before, step)))) return chain;
+    if (!step || !sameBytes(step.hash, stepHash(before, step))) return chain;
     chain.push(step);
     before = step.hash;
   }
 }
 
+/** Where the steps that are kept begin, and where the last folding was. */
+export interface Anchors {
+  readonly base: { readonly seq: number; readonly hash: Uint8Array };
+  readonly chip: Seal | undefined;
+  readonly journal: Seal | undefined;
+}
+
 /** The chip as it last stood, by whichever way still leads there; else as much of it as there is. */
 export function salvageChip(
   parts: FoundParts,
-  seal: Seal | null,
   steps: ReadonlyMap<number, Step>,
-  base: { readonly seq: number; readonly hash: Uint8Array } | null,
+  anchors: Anchors,
 ): SalvagedChip | null {
-  const last = Math.max(0, ...steps.keys());
-  const chain = base ? unbroken(steps, base.seq + 1, base.hash) : [];
-  const exact = chain.at(-1)?.seq === last && chain.length > 0;
+  const { base, chip: seal, journal } = anchors;
+  const chain = unbroken(steps, base.seq + 1, base.hash);
   const { lists, whole } = wholeParts(parts, seal);
-
   if (whole && seal) {
     const chip = attempt(() => readChip(assemble(lists)));
-    if (chip) return goOn(chip, seal.seq, chain, last, exact);
+    // Where the steps before the folding are broken, those after it can still be relied on.
+    const after = journal?.seq === seal.seq ? unbroken(steps, seal.seq + 1, journal.digest) : [];
+    const reaches = (chain.at(-1)?.seq ?? 0) >= seal.seq;
+    if (chip) return goOn(chip, seal.seq, reaches ? chain : after, reaches, steps, journal);
   }
   const start = chain[0];
   if (start?.kind === 'start') {
     const chip = attempt(() => readChip(unpack(start.body)));
-    if (chip) return goOn(chip, start.seq, chain, last, exact);
+    if (chip) return goOn(chip, start.seq, chain, true, steps, journal);
   }
   return pieced(lists, seal);
 }
 
-/** Applies the steps after `from` that can be relied on. */
-function goOn(chip: Chip, from: number, chain: readonly Step[], last: number, exact: boolean): SalvagedChip {
-  const byNumber = new Map(chain.map((step) => [step.seq, step]));
+/** A step that follows from the one before it, as far as that one's own hash goes. */
+function sound(steps: ReadonlyMap<number, Step>, seq: number): Step {
+  const step = steps.get(seq);
+  const before = steps.get(seq - 1)?.hash ?? NO_HASH;
+  if (!step || !sameBytes(step.hash, stepHash(before, step))) throw new Error('not as it was written');
+  return step;
+}
+
+/** Applies the steps of `chain` after `from`; `complete`: the chain holds every step that is kept. */
+function goOn(
+  chip: Chip,
+  from: number,
+  chain: readonly Step[],
+  complete: boolean,
+  steps: ReadonlyMap<number, Step>,
+  journal: Seal | undefined,
+): SalvagedChip {
   let now = chip;
   let reached = from;
   for (const step of chain) {
     if (step.seq <= from) continue;
     const next = attempt(() => {
-      const edit = step.of === null ? step : byNumber.get(step.of)!;
-      const { forward, backward } = changesOf(edit);
+      const { forward, backward } = changesOf(step.of === null ? step : sound(steps, step.of));
       const changes = step.kind === 'undo' ? backward : forward;
       return applyEdit(now, readEdit({ label: step.label, changes }));
     });
@@ -74,33 +95,33 @@ function goOn(chip: Chip, from: number, chain: readonly Step[], last: number, ex
     now = next;
     reached = step.seq;
   }
-  const lost = Math.max(0, last - reached);
+  const beyond = [...steps.keys()].filter((seq) => seq > reached).length;
+  const lost = Math.max(beyond, (journal?.seq ?? 0) - reached, 0);
   const report =
     lost > 0 ? [`The last ${lost} of the steps could not be read; the chip is as it was before them.`] : [];
-  return { chip: now, report, exact: exact && lost === 0 };
+  return { chip: now, report, exact: complete && lost === 0 };
 }
 
-/** Parts whose hash is right, in order, and whether they are all that the seal names. */
+/** The parts in order, and whether they are all that the seal names. */
 function wholeParts(
   parts: FoundParts,
-  seal: Seal | null,
+  seal: Seal | undefined,
 ): { lists: Record<PartKind, unknown[]>; whole: boolean } {
   const lists = { head: [] } as unknown as Record<PartKind, unknown[]>;
   const hashes: Uint8Array[] = [];
   for (const kind of ['head', ...LIST_KINDS] as const) {
     const list: unknown[] = [];
-    const rows = [...(parts.get(kind) ?? [])].sort(([a], [b]) => a - b);
-    for (const [, row] of rows) {
-      const { body, hash } = row;
-      if (typeof body !== 'string' || !sameBytes(hash, partHash(kind, body))) continue;
-      const value = attempt(() => JSON.parse(body) as unknown);
+    const rows = [...parts.values()].filter((row) => row.kind === kind);
+    for (const row of rows.sort((a, b) => Number(a.place) - Number(b.place))) {
+      const value = attempt(() => JSON.parse(String(row.body)) as unknown);
       if (value === null) continue;
       list.push(value);
-      hashes.push(hash as Uint8Array);
+      hashes.push(row.hash as Uint8Array);
     }
     lists[kind] = list;
   }
-  const whole = seal !== null && hashes.length === seal.rows && sameBytes(chipDigest(hashes), seal.digest);
+  const whole =
+    seal !== undefined && hashes.length === seal.rows && sameBytes(chipDigest(hashes), seal.digest);
   return { lists, whole };
 }
 
@@ -113,7 +134,7 @@ const NO_HEAD = {
 } as const;
 
 /** As much of the chip as is whole, with stand-ins for what the rest cannot do without. */
-function pieced(lists: Record<PartKind, unknown[]>, seal: Seal | null): SalvagedChip | null {
+function pieced(lists: Record<PartKind, unknown[]>, seal: Seal | undefined): SalvagedChip | null {
   const kept = LIST_KINDS.reduce((sum, kind) => sum + lists[kind].length, 0) + lists.head.length;
   if (kept === 0) return null;
   const report = [

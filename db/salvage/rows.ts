@@ -1,80 +1,107 @@
+import { partHash } from '../chip/parts.ts';
+import { type Step, stepOf } from '../journal/journal.ts';
+import { cellIsWhole } from '../kept/cells.ts';
+import { resultIsWhole } from '../kept/results.ts';
+import { trialIsWhole } from '../kept/trials.ts';
+import { sameBytes } from '../store/hash.ts';
+import { SEALED, type Seal, type Sealed } from '../store/seals.ts';
 import type { Row, Store } from '../store/store.ts';
+import { rawRecords } from './pages.ts';
 
-/** Most keys that are tried one by one. */
-const MOST_TRIED = 400_000;
+/** Rows of a damaged file that are as they were written, by key. */
+export interface WholeRows {
+  readonly chip: Map<string, Row>;
+  /** Still to be checked against one another: a step's hash is over the one before it. */
+  readonly steps: Map<number, Step>;
+  readonly results: Map<number, Row>;
+  readonly trials: Map<number, Row>;
+  readonly cells: Map<string, Row>;
+  readonly seals: Partial<Record<Sealed, Seal>>;
+}
 
-/** Rows that `sql` yields until it fails, which is the point. */
-function rowsUntilFault(store: Store, sql: string, take: (row: Row) => void): boolean {
-  try {
-    for (const row of store.iterate(sql)) take(row);
-    return true;
-  } catch {
-    return false;
-  }
+/** The columns of each table that is read, in the order of its records. */
+const TABLES = {
+  chip: ['kind', 'place', 'body', 'hash'],
+  journal: ['seq', 'kind', 'of', 'made', 'label', 'body', 'hash'],
+  result: ['id', 'chip', 'settings', 'made', 'body', 'hash'],
+  trial: ['id', 'name', 'made', 'chip', 'result', 'hash'],
+  cell: ['key', 'used', 'body', 'hash'],
+  seal: ['what', 'seq', 'rows', 'digest'],
+} as const;
+type Table = keyof typeof TABLES;
+
+function partIsWhole(row: Row): boolean {
+  const { kind, place, body, hash } = row;
+  return (
+    typeof kind === 'string' &&
+    typeof place === 'number' &&
+    typeof body === 'string' &&
+    sameBytes(hash, partHash(kind, body))
+  );
 }
 
 /**
- * Every row that can be read of a table with a whole-number key: read from both ends up to where
- * reading fails, then every key between by itself.
+ * Gathers every whole row: first off the pages one by one, then by the tables where they can still be
+ * read, which know best what is current.
  */
-export function readableByNumber(store: Store, table: string, key: string, last: number): Map<number, Row> {
-  const found = new Map<number, Row>();
-  const take = (row: Row): void => {
-    const number = row[key];
-    if (typeof number === 'number') found.set(number, row);
+export function wholeRows(store: Store | null, bytes: Uint8Array): WholeRows {
+  const rows: WholeRows = {
+    chip: new Map(),
+    steps: new Map(),
+    results: new Map(),
+    trials: new Map(),
+    cells: new Map(),
+    seals: {},
   };
-  const base = `SELECT * FROM ${table} ORDER BY ${key}`;
-  if (rowsUntilFault(store, base, take)) return found;
-  rowsUntilFault(store, `${base} DESC`, take);
-  const top = Math.min(Math.max(last, ...edge(found)), MOST_TRIED);
-  for (let number = 1; number <= top; number += 1) {
-    if (found.has(number)) continue;
-    const row = attempt(() => store.get(`SELECT * FROM ${table} WHERE ${key} = ?`, number));
-    if (row) take(row);
-  }
-  return found;
-}
-
-function edge(found: ReadonlyMap<number, unknown>): number[] {
-  let most = 0;
-  for (const number of found.keys()) most = Math.max(most, number);
-  return [most];
-}
-
-/** Every row that can be read of the chip's table, by kind and place. */
-export function readableParts(
-  store: Store,
-  kinds: readonly string[],
-  most: number,
-): Map<string, Map<number, Row>> {
-  const found = new Map<string, Map<number, Row>>(kinds.map((kind) => [kind, new Map()]));
-  const take = (row: Row): void => {
-    if (typeof row.place === 'number') found.get(String(row.kind))?.set(row.place, row);
-  };
-  const base = 'SELECT * FROM chip ORDER BY kind';
-  if (rowsUntilFault(store, `${base}, place`, take)) return found;
-  rowsUntilFault(store, `${base} DESC, place DESC`, take);
-  for (const kind of kinds) {
-    const those = found.get(kind)!;
-    for (let place = 0, missing = 0; place < most && missing < 20_000; place += 1) {
-      if (those.has(place)) continue;
-      const row = attempt(() => store.get('SELECT * FROM chip WHERE kind = ? AND place = ?', kind, place));
-      if (row) take(row);
-      else missing += 1;
+  for (const { rowid, values } of rawRecords(bytes)) {
+    for (const table of Object.keys(TABLES) as Table[]) {
+      const columns = TABLES[table];
+      if (columns.length !== values.length) continue;
+      const row: Record<string, unknown> = {};
+      for (const [index, column] of columns.entries()) row[column] = values[index];
+      // The engine keeps a whole-number key as the number of the row.
+      if (rowid !== null && values[0] === null) row[columns[0]] = rowid;
+      take(rows, table, row);
     }
   }
-  return found;
+  if (store) for (const table of Object.keys(TABLES) as Table[]) takeTable(rows, store, table);
+  return rows;
 }
 
-/** Rows of a table with a text key, from both ends. */
-export function readableByText(store: Store, table: string, key: string): Row[] {
-  const found = new Map<string, Row>();
-  const take = (row: Row): void => {
-    found.set(String(row[key]), row);
-  };
-  const base = `SELECT * FROM ${table} ORDER BY rowid`;
-  if (!rowsUntilFault(store, base, take)) rowsUntilFault(store, `${base} DESC`, take);
-  return [...found.values()];
+function take(rows: WholeRows, table: Table, row: Row): void {
+  if (table === 'chip' && partIsWhole(row)) rows.chip.set(partKey(String(row.kind), Number(row.place)), row);
+  else if (table === 'result' && typeof row.id === 'number' && resultIsWhole(row))
+    rows.results.set(row.id, row);
+  else if (table === 'trial' && trialIsWhole(row)) rows.trials.set(Number(row.id), row);
+  else if (table === 'cell' && cellIsWhole(row)) rows.cells.set(String(row.key), row);
+  else if (table === 'journal') {
+    const step = stepOf(row);
+    if (step && step.hash.length === 32) rows.steps.set(step.seq, step);
+  } else if (table === 'seal') takeSeal(rows, row);
+}
+
+function takeSeal(rows: WholeRows, row: Row): void {
+  const what = SEALED.find((name) => name === row.what);
+  const { seq, rows: count, digest } = row;
+  if (!what || typeof seq !== 'number' || typeof count !== 'number') return;
+  if (digest instanceof Uint8Array && digest.length === 32) rows.seals[what] = { seq, rows: count, digest };
+}
+
+export function partKey(kind: string, place: number): string {
+  return `${kind} ${place}`;
+}
+
+/** Rows from both ends of a table up to where reading fails. */
+function takeTable(rows: WholeRows, store: Store, table: Table): void {
+  const key = table === 'chip' ? ['kind', 'place'] : [TABLES[table][0]];
+  for (const order of ['', ' DESC']) {
+    const by = key.map((column) => column + order).join(', ');
+    const complete = attempt(() => {
+      for (const row of store.iterate(`SELECT * FROM ${table} ORDER BY ${by}`)) take(rows, table, row);
+      return true;
+    });
+    if (complete) return;
+  }
 }
 
 export function attempt<T>(work: () => T): T | null {

@@ -1,21 +1,20 @@
+import { readFile } from 'node:fs/promises';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { readChip } from '../../solver/chip/schema-chip.ts';
 import { Problem } from '../../solver/problem/problem.ts';
-import { LIST_KINDS, LISTS } from '../chip/parts.ts';
 import { fold } from '../journal/fold.ts';
-import { type Step, stepOf } from '../journal/journal.ts';
-import { cellIsWhole } from '../kept/cells.ts';
-import { resultIsWhole } from '../kept/results.ts';
-import { trialChip, trialIsWhole, trialWithoutResult } from '../kept/trials.ts';
+import type { Step } from '../journal/journal.ts';
+import { trialChip, trialWithoutResult } from '../kept/trials.ts';
 import { makeLayout } from '../layout/layout.ts';
 import { fillFile } from '../make.ts';
 import { removeFile } from '../place/copy-out.ts';
 import { syncFile } from '../place/replace.ts';
-import { readSeals, type Seal, sealOfRows, writeSeal } from '../store/seals.ts';
+import { openInMemory } from '../read.ts';
+import { NO_HASH } from '../store/hash.ts';
+import { sealOfRows, writeSeal } from '../store/seals.ts';
 import { type Row, Store } from '../store/store.ts';
-import { salvageChip } from './chip.ts';
-import { readings } from './readings.ts';
-import { attempt, readableByNumber, readableByText, readableParts } from './rows.ts';
+import { salvageChip, unbroken } from './chip.ts';
+import { attempt, type WholeRows, wholeRows } from './rows.ts';
 
 /** What could be read of a damaged file, checked row by row. */
 interface Found {
@@ -23,7 +22,7 @@ interface Found {
   readonly report: string[];
   /** Steps to take over as they are; empty where undo cannot go on. */
   readonly steps: readonly Step[];
-  readonly base: Seal | null;
+  readonly base: { readonly seq: number; readonly hash: Uint8Array };
   readonly results: readonly Row[];
   readonly trials: readonly Row[];
   readonly cells: readonly Row[];
@@ -34,14 +33,8 @@ interface Found {
  * project to `to`, where nothing is yet. Returns what was kept and lost, in sentences.
  */
 export async function salvage(path: string, to: string, program: string): Promise<string[]> {
-  let best: Found | null = null;
-  for await (const store of readings(path)) {
-    const found = attempt(() => find(store));
-    store.close();
-    if (found && (!best || amount(found) > amount(best))) best = found;
-    if (best && best.report.length === 0) break;
-  }
-  if (!best)
+  const found = await read(path);
+  if (!found)
     throw new Problem(
       'project',
       'The file is damaged so far that no part of the chip can be read. It is left as it is.',
@@ -49,19 +42,13 @@ export async function salvage(path: string, to: string, program: string): Promis
       'Go back to a backup.',
     );
   try {
-    write(to, best, program);
+    write(to, found, program);
     await syncFile(to);
   } catch (error) {
     await removeFile(to);
     throw error;
   }
-  return [...best.report, counted(best)];
-}
-
-/** How much was found, to choose between two readings. */
-function amount(found: Found): number {
-  const parts = LIST_KINDS.reduce((sum, kind) => sum + found.chip[LISTS[kind]].length, 0);
-  return parts + found.steps.length + found.results.length + found.trials.length + found.cells.length;
+  return [...found.report, counted(found)];
 }
 
 function counted(found: Found): string {
@@ -69,58 +56,41 @@ function counted(found: Found): string {
   return `Kept: the chip, ${found.trials.length} trials, ${found.results.length} results, ${found.cells.length} solved junctions; ${undo}.`;
 }
 
-function find(store: Store): Found | null {
-  const seals = attempt(() => readSeals(store));
-  const journal = readableByNumber(store, 'journal', 'seq', seals?.journal.seq ?? 0);
-  const steps = new Map<number, Step>();
-  for (const row of journal.values()) {
-    const step = stepOf(row);
-    if (step) steps.set(step.seq, step);
+async function read(path: string): Promise<Found | null> {
+  const store = await openInMemory(path).catch(() => null);
+  try {
+    const bytes = store ? attempt(() => store.bytes()) : null;
+    return find(wholeRows(store, bytes ?? (await readFile(path))));
+  } finally {
+    store?.close();
   }
-  const parts = readableParts(store, ['head', ...LIST_KINDS], seals?.chip.rows ?? 1000);
-  const base = seals
-    ? { seq: seals.base.seq, hash: seals.base.digest }
-    : { seq: 0, hash: new Uint8Array(32) };
-  const found = salvageChip(parts, seals?.chip ?? null, steps, base);
+}
+
+function find(rows: WholeRows): Found | null {
+  const { seals } = rows;
+  const base = seals.base ? { seq: seals.base.seq, hash: seals.base.digest } : { seq: 0, hash: NO_HASH };
+  const found = salvageChip(rows.chip, rows.steps, { base, chip: seals.chip, journal: seals.journal });
   if (!found) return null;
 
   const report = [...found.report];
-  const wholeOf = (
-    what: string,
-    rows: Iterable<Row>,
-    isWhole: (row: Row) => boolean,
-    sealed?: number,
-  ): Row[] => {
-    const all = [...rows];
-    const whole = all.filter(isWhole);
-    const lost = Math.max(all.length, sealed ?? 0) - whole.length;
+  const count = (what: string, kept: number, sealed: number | undefined): void => {
+    const lost = (sealed ?? kept) - kept;
     if (lost > 0) report.push(`${lost} ${what} could not be read and are lost.`);
-    return whole;
   };
-  const results = wholeOf(
-    'results',
-    readableByNumber(store, 'result', 'id', 0).values(),
-    resultIsWhole,
-    seals?.result.rows,
-  );
-  const trials = wholeOf(
-    'trials',
-    readableByNumber(store, 'trial', 'id', 0).values(),
-    (row) => trialIsWhole(row) && attempt(() => readChip(trialChip(row))) !== null,
-    seals?.trial.rows,
-  );
-  const cells = wholeOf('solved junctions', readableByText(store, 'cell', 'key'), cellIsWhole);
-  const chain = found.exact ? [...steps.values()].sort((a, b) => a.seq - b.seq) : [];
-  if (!found.exact && steps.size > 1)
+  const results = [...rows.results.values()];
+  const trials = [...rows.trials.values()].filter((row) => attempt(() => readChip(trialChip(row))) !== null);
+  count('results', results.length, seals.result?.rows);
+  count('trials', trials.length, seals.trial?.rows);
+  if (!found.exact && rows.steps.size > 1)
     report.push('The record of steps is broken: what was done before cannot be undone.');
   return {
     chip: found.chip,
     report,
-    steps: chain,
-    base: found.exact ? (seals?.base ?? null) : null,
+    steps: found.exact ? unbroken(rows.steps, base.seq + 1, base.hash) : [],
+    base,
     results,
     trials,
-    cells,
+    cells: [...rows.cells.values()],
   };
 }
 
@@ -147,7 +117,7 @@ function write(to: string, found: Found, program: string): void {
 /** Puts the steps in place of the one that a new file begins with. */
 function takeOver(store: Store, found: Found): void {
   const last = found.steps.at(-1)!;
-  const base = { seq: found.base?.seq ?? 0, hash: found.base?.digest ?? new Uint8Array(32) };
+  const { base } = found;
   store.transaction(() => {
     store.run('DELETE FROM journal');
     for (const step of found.steps) insert(store, 'journal', { ...step });
