@@ -60,6 +60,8 @@ export function factorPlane(
     if (boundaryTag[e] > 0) onFace[a] = onFace[b] = 1;
     else wall += Math.hypot(plane.mesh.x[b] - plane.mesh.x[a], plane.mesh.y[b] - plane.mesh.y[a]);
   }
+  // Closed all round, pressure is known but for a constant: one corner holds it.
+  if (!onFace.includes(1)) onFace[0] = 1;
   pressure.value.set(plane.pressureStiffness);
   let area = 0;
   for (const value of plane.pressureMass) area += value;

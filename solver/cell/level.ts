@@ -5,7 +5,7 @@ import { analysePlane, factorPlane, type PlaneSymbolic } from './factors.ts';
 import { HALF } from './flow-field.ts';
 import { assemblePlane, faceLoads, type Plane } from './plane.ts';
 import { portMatrix } from './port-matrix.ts';
-import { type StokesFields, solveStokes } from './stokes.ts';
+import { faceDrives, type StokesFields, solveStokes } from './stokes.ts';
 import { wallTraction } from './wall-traction.ts';
 
 /** One mesh, ready to be solved with any number of modes. */
@@ -33,7 +33,7 @@ export function solveLevel(level: Level, modes: number, tolerance: number): Leve
   const { plane, symbolic, loads } = level;
   const depth = standardModes(modes);
   const factors = factorPlane(plane, symbolic, depth, HALF);
-  const flow = solveStokes(plane, depth, HALF, factors, loads.slice(0, -1), tolerance);
+  const flow = solveStokes(plane, depth, HALF, factors, faceDrives(depth, loads.slice(0, -1)), tolerance);
   const { matrix, checks } = portMatrix(plane, depth, HALF, loads, flow);
   return { level, modes, flow, matrix, checks };
 }

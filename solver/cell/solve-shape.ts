@@ -139,5 +139,5 @@ function peakError(
     step = Math.max(step, Math.abs(there / here - 1));
     if (less) drop = Math.max(drop, Math.abs(peakOfFields(less, face) / there - 1));
   }
-  return { mesh: 0.8 * step + 0.003 * coarseness ** 2, modes: less ? 0.5 * drop : 0.1 };
+  return { mesh: step + 0.004 * coarseness ** 2, modes: less ? 0.8 * drop : 0.1 };
 }

@@ -15,16 +15,39 @@ export interface StokesFields {
   readonly residual: number;
 }
 
+/** Right sides, mode by mode, layouts as in coupling.ts. */
+export interface StokesLoads {
+  readonly patterns: number;
+  /** N: on the in-plane velocity of each mode. */
+  readonly inPlane: readonly Float64Array[];
+  /** On each mode across; none where absent. */
+  readonly across?: readonly Float64Array[];
+  /** Of each pressure mode: what the divergence is to be; zero where absent. */
+  readonly divergence?: readonly Float64Array[];
+}
+
+/** Unit pressure on one face after the other, which drives mode k by its mean over the depth. */
+export function faceDrives(depth: DepthModes, loads: readonly Float64Array[]): StokesLoads {
+  const size = loads.length > 0 ? loads[0].length : 0;
+  const inPlane = Array.from({ length: depth.count }, (_, k) => {
+    const out = new Float64Array(size * loads.length);
+    loads.forEach((load, c) => {
+      for (let i = 0; i < size; i += 1) out[c * size + i] = depth.coupling[k] * load[i];
+    });
+    return out;
+  });
+  return { patterns: loads.length, inPlane };
+}
+
 /**
- * Stokes flow between plates at s = +-1, driven by loads f on the in-plane velocity at faces:
- *   (K + lambda_k / H^2 M) u_k - sum over j of C_jk B^T p_j = m_k f
- *   (K + lambda'_m / H^2 M) w_m - sum over j of E_jm / H M^T p_j = 0
- *   sum over k of C_jk B u_k + sum over m of E_jm / H M w_m = 0
+ * Stokes flow between plates at s = +-1 for loads f, g and divergence d:
+ *   (K + lambda_k / H^2 M) u_k - sum over j of C_jk B^T p_j = f_k
+ *   (K + lambda'_m / H^2 M) w_m - sum over j of E_jm / H M^T p_j = g_m
+ *   sum over k of C_jk B u_k + sum over m of E_jm / H M w_m = d_j
  * by conjugate gradients on the pressure Schur complement, all patterns side by side, preconditioned
  * as by Cahouet and Chabard 1988 (Int. J. Numer. Methods Fluids 8, 869): inverse mass, and for the
  * pressure's mean over the depth the inverse Laplacian besides.
  *
- * @param loads one per pattern, x then y: 2 x count
  * @param tolerance of the residual, relative to the start
  */
 export function solveStokes(
@@ -32,11 +55,11 @@ export function solveStokes(
   depth: DepthModes,
   halfDepth: number,
   factors: StokesFactors,
-  loads: readonly Float64Array[],
+  loads: StokesLoads,
   tolerance: number,
   mostIterations = 400,
 ): StokesFields {
-  const n = loads.length;
+  const n = loads.patterns;
   const N = depth.count;
   const across = depth.acrossLambda.length;
   const pressures = depth.coupling.length / N;
@@ -87,22 +110,28 @@ export function solveStokes(
   };
 
   for (let k = 0; k < N; k += 1) {
-    for (let c = 0; c < n; c += 1) {
-      const from = 2 * c * count;
-      for (let i = 0; i < 2 * count; i += 1) u[k][from + i] = depth.coupling[k] * loads[c][i];
-    }
+    u[k].set(loads.inPlane[k]);
     solve(factors.inPlane[k], u[k], 2 * n);
   }
+  for (let m = 0; m < across && loads.across; m += 1) {
+    w[m].set(loads.across[m]);
+    solve(factors.across[m], w[m], n);
+  }
   conserve(u, w, -1, r);
+  if (loads.divergence) for (let j = 0; j < pressures; j += 1) axpy(1, loads.divergence[j], r[j]);
   precondition();
   for (let j = 0; j < pressures; j += 1) d[j].set(z[j]);
   const rz = dots(r, z, n);
   const first = rz.slice();
+  // Where the start is divergence-free but for rounding there is nothing to iterate on.
+  const floor = dots(u, loads.inPlane, n);
+  const acrossEnergy = dots(w, loads.across ?? [], n);
+  for (let c = 0; c < n; c += 1) floor[c] = 1e-28 * Math.abs(floor[c] + acrossEnergy[c]);
   const alpha = new Float64Array(n);
   const beta = new Float64Array(n);
   const worst = (): number => {
     let most = 0;
-    for (let c = 0; c < n; c += 1) if (first[c] > 0) most = Math.max(most, rz[c] / first[c]);
+    for (let c = 0; c < n; c += 1) if (rz[c] > floor[c]) most = Math.max(most, rz[c] / first[c]);
     return Math.sqrt(most);
   };
   let iterations = 0;
@@ -161,10 +190,10 @@ function turn(z: Float64Array, b: Float64Array, d: Float64Array): void {
   }
 }
 
-/** Dot product of each pattern over all modes. */
+/** Dot product of each pattern over all modes of `b`. */
 function dots(a: readonly Float64Array[], b: readonly Float64Array[], n: number): Float64Array {
   const out = new Float64Array(n);
-  for (let j = 0; j < a.length; j += 1) {
+  for (let j = 0; j < b.length; j += 1) {
     const x = a[j];
     const y = b[j];
     const size = x.length / n;
