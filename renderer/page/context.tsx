@@ -1,6 +1,7 @@
 import { createContext, useContext } from 'react';
 import type { Commands } from '../commands/command.ts';
 import type { Desk } from '../state/desk.ts';
+import type { Preferences } from '../state/preferences.ts';
 import type { Workbench } from '../state/workbench.ts';
 
 /** What every part of the page works with. */
@@ -8,6 +9,7 @@ export interface Page {
   readonly desk: Desk;
   readonly bench: Workbench;
   readonly commands: Commands;
+  readonly preferences: Preferences;
 }
 
 export const PageContext = createContext<Page | null>(null);

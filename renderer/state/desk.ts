@@ -1,5 +1,5 @@
 import type { Client } from '../../main/contract/client.ts';
-import type { Mode, Output, ProjectState } from '../../main/contract/contract.ts';
+import type { Mode, Output, ProjectState, Standing } from '../../main/contract/contract.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { type ChipEdit, makeEdit } from '../../solver/chip/edit.ts';
 import { Problem } from '../../solver/problem/problem.ts';
@@ -40,7 +40,9 @@ export interface Desk {
   readonly opening: Store<string>;
   chip(): Chip | null;
   spatial(): Spatial;
-  /** Makes the change, or says why not. */
+  /** Makes the change; null, or why it was not made. */
+  attempt(alteration: Alteration): string | null;
+  /** Makes the change, or tells the person why not. */
   alter(alteration: Alteration): boolean;
   undo(): void;
   redo(): void;
@@ -51,8 +53,14 @@ export interface Desk {
   /** Opens what a request to the host returns. */
   open(label: string, request: () => Promise<ProjectState>): Promise<void>;
   close(): Promise<void>;
+  /** As it was at opening, as one step. */
+  revert(): Promise<void>;
+  /** The project's place or mode changed. */
+  stand(standing: Standing): void;
   /** Resolves when all that was done is kept. */
   settled(): Promise<void>;
+  /** The host's number of the last thing kept. */
+  position(): number;
 }
 
 const wordsOf = (error: unknown): string =>
@@ -144,6 +152,23 @@ export function createDesk(client: Client, solver: Solver): Desk {
     }
   };
 
+  const attempt = (alteration: Alteration): string | null => {
+    const open = project.get();
+    if (!open) return 'No chip is open.';
+    if (open.mode === 'read-only')
+      return open.modeSays || 'This project is only to be read; save it under another name to change it.';
+    try {
+      const edit = toEdit(open.document.chip, alteration);
+      if (edit.changes.length === 0) return null;
+      const document = done(open.document, edit);
+      put(document, edit, { hostRedo: null });
+      keeper.add({ kind: 'edit', edit });
+      return null;
+    } catch (error) {
+      return wordsOf(error);
+    }
+  };
+
   return {
     client,
     solver,
@@ -157,23 +182,11 @@ export function createDesk(client: Client, solver: Solver): Desk {
       if (spatial?.chip !== chip) spatial = new Spatial(chip);
       return spatial;
     },
+    attempt,
     alter(alteration) {
-      const open = project.get();
-      if (!open) return false;
-      if (open.mode === 'read-only') {
-        say(open.modeSays || 'This project is only to be read; save it under another name to change it.');
-        return false;
-      }
-      try {
-        const edit = toEdit(open.document.chip, alteration);
-        const document = done(open.document, edit);
-        put(document, edit, { hostRedo: null });
-        keeper.add({ kind: 'edit', edit });
-        return true;
-      } catch (error) {
-        say(wordsOf(error));
-        return false;
-      }
+      const why = attempt(alteration);
+      if (why !== null) say(why);
+      return why === null;
     },
     undo() {
       const open = project.get();
@@ -222,7 +235,32 @@ export function createDesk(client: Client, solver: Solver): Desk {
       project.set(null);
       view.set({ ...FIRST_VIEW, size: view.get().size });
     },
+    async revert() {
+      await keeper.settled();
+      try {
+        const { edit, ...position } = await client.call('project.revert', {});
+        const open = project.get();
+        if (!open) return;
+        const { chip, inverse } = makeEdit(open.document.chip, edit);
+        keeper.start(position.seq);
+        put({ chip, done: [...open.document.done, { edit, inverse }], undone: [] }, edit, {
+          hostUndo: position.undo,
+          hostRedo: position.redo,
+          keeping: false,
+          keptAt: Date.now(),
+        });
+      } catch (error) {
+        say(wordsOf(error));
+      }
+    },
+    stand({ name, path, mode, modeSays }) {
+      const open = project.get();
+      if (!open) return;
+      project.set({ ...open, name, path, mode, modeSays });
+      if (modeSays && modeSays !== open.modeSays) say(modeSays);
+    },
     settled: () => keeper.settled(),
+    position: () => keeper.position,
   };
 }
 

@@ -7,7 +7,27 @@ export const TABS = ['outlets', 'channels', 'routes', 'junctions', 'findings'] a
 export type Tab = (typeof TABS)[number];
 
 /** A panel that takes the place of the card. */
-export type Panel = 'card' | 'chip' | 'plots' | 'trials' | 'hand over' | 'history' | 'keys' | 'about';
+export type Panel =
+  | 'card'
+  | 'repeat'
+  | 'chip'
+  | 'plots'
+  | 'trials'
+  | 'hand over'
+  | 'history'
+  | 'keys'
+  | 'about';
+
+/** A place on the disk that is asked for. */
+export interface FileWish {
+  readonly purpose: 'open' | 'save';
+  readonly title: string;
+  /** "Project" */
+  readonly kind: string;
+  readonly extensions: readonly string[];
+  readonly suggest?: string;
+  done(path: string | null): void;
+}
 
 /** What is of the view alone: nothing of it enters the project. */
 export interface View {
@@ -25,6 +45,7 @@ export interface View {
   readonly tab: Tab;
   readonly panel: Panel;
   readonly palette: boolean;
+  readonly files: FileWish | null;
   /** One sentence about what was not done and why; '' where there is nothing to say. */
   readonly says: string;
   /** Speed with moving marks, where motion is allowed. */
@@ -43,6 +64,7 @@ export const FIRST_VIEW: View = {
   tab: 'outlets',
   panel: 'card',
   palette: false,
+  files: null,
   says: '',
   streamlines: false,
 };

@@ -17,7 +17,8 @@ import {
 } from './typing.ts';
 
 /** Chambers: a rectangle between two corners, a circle about its middle, or a polygon point by point. */
-export type ChamberForm = 'rectangle' | 'round' | 'polygon';
+const FORMS = ['rectangle', 'round', 'polygon'] as const;
+export type ChamberForm = (typeof FORMS)[number];
 
 export interface ChamberState {
   readonly form: ChamberForm;
@@ -132,12 +133,12 @@ function accept(state: ChamberState, scope: Scope): Outcome<ChamberState> {
 
 function on(state: ChamberState, event: ToolEvent, scope: Scope): Outcome<ChamberState> {
   switch (event.kind) {
-    case 'type': {
-      // one letter chooses the form before the first point
-      const form = { r: 'rectangle', o: 'round', p: 'polygon' }[event.text] as ChamberForm | undefined;
-      if (form && state.points.length === 0) return { state: { ...state, form } };
-      return { state: { ...state, typing: typeInto(state.typing, event.text) } };
+    case 'again': {
+      const next = FORMS[(FORMS.indexOf(state.form) + 1) % FORMS.length]!;
+      return { state: { ...begun(state), form: next } };
     }
+    case 'type':
+      return { state: { ...state, typing: typeInto(state.typing, event.text) } };
     case 'rub':
       if (state.typing.texts[state.typing.field] !== '')
         return { state: { ...state, typing: rubOut(state.typing) } };
@@ -211,7 +212,7 @@ function preview(state: ChamberState, scope: Scope): Preview {
       ? state.form === 'polygon'
         ? 'Click each corner; the first again, or Enter, closes it.'
         : 'Click the far corner, or type its size.'
-      : 'R a rectangle, O round, P a polygon; then click, or type a place.',
+      : `A ${state.form === 'round' ? 'round one' : state.form}; the key H again changes that. Click, or type a place.`,
   };
 }
 

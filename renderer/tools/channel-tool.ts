@@ -199,6 +199,8 @@ function on(state: ChannelState, event: ToolEvent, scope: Scope): Outcome<Channe
     case 'rub':
       if (isTyping(state.typing)) return { state: { ...state, typing: rubOut(state.typing) } };
       return { state: { ...state, points: state.points.slice(0, -1) } };
+    case 'again':
+      return { state };
     case 'next':
       return { state: { ...state, typing: nextField(state.typing) } };
     case 'arrow':

@@ -44,6 +44,8 @@ export type ToolEvent =
   /** To the next figure that can be typed. */
   | { readonly kind: 'next' }
   | { readonly kind: 'arrow'; readonly direction: Xy; readonly far?: boolean }
+  /** The verb of the tool at hand once more. */
+  | { readonly kind: 'again' }
   | { readonly kind: 'accept' }
   | { readonly kind: 'leave' };
 

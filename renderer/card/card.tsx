@@ -1,0 +1,105 @@
+import { useEffect, useRef } from 'react';
+import { findPart } from '../edits/parts.ts';
+import { usePage } from '../page/context.tsx';
+import { ChipPanel } from '../panels/chip-panel.tsx';
+import { HandOverPanel } from '../panels/hand-over-panel.tsx';
+import { KeysPanel } from '../panels/keys-panel.tsx';
+import { PlotsPanel } from '../panels/plots-panel.tsx';
+import { AboutPanel, HistoryPanel } from '../panels/program-panels.tsx';
+import { RepeatPanel } from '../panels/repeat-panel.tsx';
+import { TrialsPanel } from '../panels/trials-panel.tsx';
+import { useStore } from '../state/store.ts';
+import type { Panel } from '../state/view.ts';
+import { ChannelCard } from './channel-card.tsx';
+import { NothingCard } from './nothing-card.tsx';
+import { ChamberCard, SeveralCard, ViaCard } from './other-cards.tsx';
+import { PortCard } from './port-card.tsx';
+import { SiteCard } from './site-card.tsx';
+
+const TITLES: Readonly<Record<Exclude<Panel, 'card'>, string>> = {
+  repeat: 'Array and offset',
+  chip: 'Chip and fluid',
+  plots: 'Plots',
+  trials: 'Trials',
+  'hand over': 'Hand over',
+  history: 'What was done',
+  keys: 'Keys and units',
+  about: 'About',
+};
+
+/** The panel at the right: what is chosen, or what was asked for. */
+export function Card() {
+  const { desk, bench } = usePage();
+  const panel = useStore(desk.view, (view) => view.panel);
+  const aside = useRef<HTMLElement>(null);
+  useEffect(
+    () =>
+      bench.onCard(() => {
+        requestAnimationFrame(() =>
+          aside.current?.querySelector<HTMLElement>('input, select, button')?.focus(),
+        );
+      }),
+    [bench],
+  );
+  useEffect(() => {
+    aside.current?.scrollTo(0, 0);
+    if (panel !== 'card') aside.current?.querySelector<HTMLElement>('h2, input, button')?.focus();
+  }, [panel]);
+  return (
+    <aside ref={aside} className="card" aria-label={panel === 'card' ? 'What is chosen' : TITLES[panel]}>
+      {panel === 'card' ? (
+        <Chosen />
+      ) : (
+        <>
+          <button type="button" className="back" onClick={() => desk.view.patch({ panel: 'card' })}>
+            Back to what is chosen
+          </button>
+          <h2 tabIndex={-1}>{TITLES[panel]}</h2>
+          <PanelBody panel={panel} />
+        </>
+      )}
+    </aside>
+  );
+}
+
+function PanelBody({ panel }: { readonly panel: Exclude<Panel, 'card'> }) {
+  switch (panel) {
+    case 'repeat':
+      return <RepeatPanel />;
+    case 'chip':
+      return <ChipPanel />;
+    case 'plots':
+      return <PlotsPanel />;
+    case 'trials':
+      return <TrialsPanel />;
+    case 'hand over':
+      return <HandOverPanel />;
+    case 'history':
+      return <HistoryPanel />;
+    case 'keys':
+      return <KeysPanel />;
+    default:
+      return <AboutPanel />;
+  }
+}
+
+function Chosen() {
+  const { desk } = usePage();
+  const chip = useStore(desk.project)!.document.chip;
+  const selection = useStore(desk.view, (view) => view.selection);
+  const [only] = selection;
+  if (only === undefined) return <NothingCard />;
+  if (selection.length > 1) return <SeveralCard refs={selection} />;
+  const part = findPart(chip, only);
+  if (!part) return only.includes(':') ? <SiteCard key={only} name={only} /> : <NothingCard />;
+  switch (part.kind) {
+    case 'channel':
+      return <ChannelCard key={only} channel={part.value} />;
+    case 'chamber':
+      return <ChamberCard key={only} chamber={part.value} />;
+    case 'via':
+      return <ViaCard key={only} via={part.value} />;
+    default:
+      return <PortCard key={only} port={part.value} />;
+  }
+}

@@ -1,0 +1,34 @@
+import { usePage } from '../page/context.tsx';
+import { useStore } from '../state/store.ts';
+
+/** What the checks and limits have to say about some places, each with what to do. */
+export function PlaceFindings({ ids }: { readonly ids: readonly string[] }) {
+  const { desk } = usePage();
+  const { result } = useStore(desk.solver.solved);
+  const chip = useStore(desk.project)!.document.chip;
+  if (!result) return null;
+  const mine = (where: string): boolean =>
+    ids.some((id) => where === id || where.replace(/#\d+$/, '') === id || where.endsWith(`:${id}`));
+  const missed = result.limits.filter((limit) => limit.met === false && mine(limit.where));
+  const findings = result.findings.filter((finding) => mine(finding.where));
+  if (missed.length + findings.length === 0) return null;
+  return (
+    <section aria-label="Findings">
+      {missed.map((limit) => {
+        const kind = chip.limits.find((found) => found.name === limit.name);
+        return (
+          <p key={limit.name} className="finding missed">
+            {limit.name}: {limit.worst?.toPrecision(3)} {kind && 'shear' in kind ? 'Pa' : ''} where{' '}
+            {limit.limit?.toPrecision(3)} is allowed.
+          </p>
+        );
+      })}
+      {findings.map((finding) => (
+        <div key={finding.kind + finding.where + finding.says} className="finding">
+          <p>{finding.says}</p>
+          <p className="soft">{finding.do}</p>
+        </div>
+      ))}
+    </section>
+  );
+}

@@ -1,0 +1,152 @@
+import type { Drive, Port } from '../../solver/chip/chip.ts';
+import { usePage } from '../page/context.tsx';
+import { useStore } from '../state/store.ts';
+import { figure, lengthFigure } from '../words/figure.ts';
+import { PartName } from './part-name.tsx';
+import { PlaceFindings } from './place-findings.tsx';
+import { QuantityField } from './quantity-field.tsx';
+import { TargetFields } from './target-fields.tsx';
+import { ChoiceField, Figure } from './text-field.tsx';
+
+const DRIVES = [
+  ['pressure', 'a pressure'],
+  ['flow', 'a flow'],
+  ['head', 'a reservoir'],
+  ['closed', 'closed'],
+] as const satisfies readonly (readonly [Drive['kind'], string])[];
+
+const FIRST: Readonly<Record<Drive['kind'], Drive>> = {
+  pressure: { kind: 'pressure', pressure: 0 },
+  flow: { kind: 'flow', flow: 1e-8 / 60 },
+  head: { kind: 'head', head: 0.1 },
+  closed: { kind: 'closed' },
+};
+
+/** One port: its drive, its hole, its tubing, what it carries. */
+export function PortCard({ port }: { readonly port: Port }) {
+  const { desk } = usePage();
+  const chip = useStore(desk.project)!.document.chip;
+  const { result } = useStore(desk.solver.solved);
+  const solved = result?.ports.find((found) => found.id === port.id);
+  const put = (change: Partial<Port>, label: string): string | null =>
+    desk.attempt({ label, put: [{ kind: 'port', value: { ...port, ...change } }] });
+  const drive = (next: Drive): string | null => put({ drive: next }, `set the drive of ${port.id}`);
+  return (
+    <>
+      <h2>{port.id}</h2>
+      <p className="soft">
+        port at {lengthFigure(port.at[0])}, {lengthFigure(port.at[1])} · layer {port.layer}
+      </p>
+      <div className="fields">
+        <ChoiceField
+          label="Driven by"
+          value={port.drive.kind}
+          choices={DRIVES}
+          onAccept={(kind) => drive(FIRST[kind])}
+        />
+        {port.drive.kind === 'pressure' && (
+          <QuantityField
+            label="Pressure"
+            value={port.drive.pressure}
+            kind="pressure"
+            onAccept={(pressure) => drive({ kind: 'pressure', pressure })}
+          />
+        )}
+        {port.drive.kind === 'flow' && (
+          <QuantityField
+            label="Flow into the chip"
+            value={port.drive.flow}
+            kind="flow"
+            unit="uL/min"
+            onAccept={(flow) => drive({ kind: 'flow', flow })}
+          />
+        )}
+        {port.drive.kind === 'head' && (
+          <QuantityField
+            label="Surface above the chip"
+            value={port.drive.head}
+            kind="length"
+            unit="mm"
+            onAccept={(head) => drive({ kind: 'head', head })}
+          />
+        )}
+        <QuantityField
+          label="Hole"
+          value={port.diameter / 1e9}
+          kind="length"
+          unit="um"
+          onAccept={(value) => put({ diameter: Math.round(value * 1e9) }, `set the hole of ${port.id}`)}
+        />
+        {port.tubing.map((tube, i) => (
+          <fieldset key={`${tube.bore} ${tube.length} ${port.tubing.indexOf(tube)}`} className="fields">
+            <legend>Tubing{port.tubing.length > 1 ? ` ${i + 1}` : ''}</legend>
+            <QuantityField
+              label="Bore"
+              value={tube.bore}
+              kind="length"
+              unit="mm"
+              onAccept={(bore) =>
+                put(
+                  { tubing: port.tubing.map((t, k) => (k === i ? { ...t, bore } : t)) },
+                  `set the tubing of ${port.id}`,
+                )
+              }
+            />
+            <QuantityField
+              label="Its length"
+              value={tube.length}
+              kind="length"
+              unit="mm"
+              onAccept={(length) =>
+                put(
+                  { tubing: port.tubing.map((t, k) => (k === i ? { ...t, length } : t)) },
+                  `set the tubing of ${port.id}`,
+                )
+              }
+            />
+            <button
+              type="button"
+              className="quiet"
+              onClick={() =>
+                put({ tubing: port.tubing.filter((_, k) => k !== i) }, `take tubing off ${port.id}`)
+              }
+            >
+              Take it off
+            </button>
+          </fieldset>
+        ))}
+        <button
+          type="button"
+          className="quiet"
+          onClick={() =>
+            put({ tubing: [...port.tubing, { bore: 0.5e-3, length: 0.3 }] }, `put tubing on ${port.id}`)
+          }
+        >
+          Put tubing on
+        </button>
+        {chip.layers.length > 1 && (
+          <ChoiceField
+            label="Layer"
+            value={port.layer}
+            choices={chip.layers.map((found) => [found.id, found.id])}
+            onAccept={(layer) => put({ layer }, `move ${port.id} to layer ${layer}`)}
+          />
+        )}
+        <PartName kind="port" id={port.id} />
+      </div>
+      <dl className="fields">
+        {solved ? (
+          <>
+            <Figure label="Pressure at the chip" figure={figure(solved.pressure, 'pressure')} />
+            <Figure label="Flow into the chip" figure={figure(solved.flow, 'flow')} />
+            <Figure label="Share of all" figure={figure(solved.share, 'share', { unit: '%' })} />
+          </>
+        ) : (
+          <p className="soft">Its flow comes with the first answer.</p>
+        )}
+      </dl>
+      {port.drive.kind !== 'closed' && <TargetFields of={{ port: port.id }} />}
+      <PlaceFindings ids={[port.id]} />
+    </>
+  );
+}

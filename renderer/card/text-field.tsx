@@ -1,0 +1,95 @@
+import { useEffect, useId, useState } from 'react';
+
+/** A name to edit; refused ones stay in the field with the reason beside it. */
+export function TextField({
+  label,
+  value,
+  onAccept,
+}: {
+  readonly label: string;
+  readonly value: string;
+  readonly onAccept: (value: string) => string | null;
+}) {
+  const id = useId();
+  const [text, setText] = useState(value);
+  const [fault, setFault] = useState('');
+  useEffect(() => {
+    setText(value);
+    setFault('');
+  }, [value]);
+  const accept = (): void => setFault(text === value ? '' : (onAccept(text.trim()) ?? ''));
+  return (
+    <div className="field">
+      <label htmlFor={id}>{label}</label>
+      <input
+        id={id}
+        value={text}
+        spellCheck={false}
+        autoComplete="off"
+        aria-invalid={fault !== ''}
+        aria-describedby={fault ? `${id}-fault` : undefined}
+        onChange={(event) => setText(event.target.value)}
+        onBlur={accept}
+        onKeyDown={(event) => {
+          if (event.key === 'Enter') accept();
+          if (event.key === 'Escape') {
+            setText(value);
+            setFault('');
+          }
+        }}
+      />
+      {fault && (
+        <p className="fault" id={`${id}-fault`} role="alert">
+          {fault}
+        </p>
+      )}
+    </div>
+  );
+}
+
+/** One of a few, in words. */
+export function ChoiceField<T extends string>({
+  label,
+  value,
+  choices,
+  onAccept,
+}: {
+  readonly label: string;
+  /** '' where what is chosen differs. */
+  readonly value: T | '';
+  readonly choices: readonly (readonly [T, string])[];
+  readonly onAccept: (value: T) => void;
+}) {
+  const id = useId();
+  return (
+    <div className="field">
+      <label htmlFor={id}>{label}</label>
+      <select id={id} value={value} onChange={(event) => onAccept(event.target.value as T)}>
+        {value === '' && <option value="">they differ</option>}
+        {choices.map(([choice, words]) => (
+          <option key={choice} value={choice}>
+            {words}
+          </option>
+        ))}
+      </select>
+    </div>
+  );
+}
+
+/** A result: a name and its figure, nothing to edit. */
+export function Figure({
+  label,
+  figure,
+  missed,
+}: {
+  readonly label: string;
+  readonly figure: string;
+  readonly missed?: boolean;
+}) {
+  return (
+    <div className="field">
+      <dt>{label}</dt>
+      <dd className={missed ? 'alarm' : undefined}>{figure}</dd>
+    </div>
+  );
+}

@@ -1,0 +1,89 @@
+import { boxOfParts, findParts } from '../edits/parts.ts';
+import { fitted, panned, zoomed } from '../sheet/camera.ts';
+import { OVERLAYS } from '../sheet/overlay.ts';
+import { fitChip, INSET } from '../sheet/sheet.tsx';
+import type { Desk } from '../state/desk.ts';
+import { TABS } from '../state/view.ts';
+import type { Command } from './command.ts';
+
+const HELP: Readonly<Record<(typeof OVERLAYS)[number], string>> = {
+  share: 'Colour each channel by its share of the flow.',
+  speed: 'Colour each channel by its mean speed.',
+  pressure: 'Colour each channel by its pressure.',
+  'wall shear': 'Colour each channel by its peak wall shear against the limit.',
+  time: 'Colour each channel by the time a liquid stays in it.',
+  'off target': 'Colour each channel by how far its target is missed.',
+  depth: 'Colour each channel by the depth of its layer.',
+  findings: 'Fill the channels that a finding names.',
+};
+
+export function showCommands(desk: Desk): Command[] {
+  const open = (): string | null => (desk.chip() ? null : 'Open or begin a chip first.');
+  const show = (
+    id: string,
+    title: string,
+    keys: readonly string[],
+    help: string,
+    run: () => void,
+  ): Command => ({
+    id,
+    title,
+    keys,
+    help,
+    group: 'Show',
+    why: open,
+    run,
+  });
+  const zoom = (factor: number) => (): void => {
+    const { camera, size } = desk.view.get();
+    if (camera) desk.view.patch({ camera: zoomed(camera, size, [size.width / 2, size.height / 2], factor) });
+  };
+  const pan = (dx: number, dy: number) => (): void => {
+    const { camera } = desk.view.get();
+    if (camera) desk.view.patch({ camera: panned(camera, dx, dy) });
+  };
+  return [
+    ...OVERLAYS.map((name, i) =>
+      show(`show ${name}`, `Show ${name}`, [String(i + 1)], HELP[name], () =>
+        desk.view.patch({ overlay: name }),
+      ),
+    ),
+    show('fit', 'Whole chip', ['f'], 'Show the whole chip.', () => fitChip(desk)),
+    show('near', 'Near', ['n'], 'Show the chosen parts as large as they fit.', () => {
+      const { selection, size } = desk.view.get();
+      const box = boxOfParts(findParts(desk.chip()!, selection));
+      if (!box) return fitChip(desk);
+      const least = 200_000;
+      const more = Math.max(least, 0.1 * Math.max(box.right - box.left, box.top - box.bottom));
+      desk.view.patch({
+        camera: fitted(
+          { left: box.left - more, right: box.right + more, bottom: box.bottom - more, top: box.top + more },
+          size,
+          INSET,
+        ),
+      });
+    }),
+    show('zoom in', 'Nearer', ['+', '='], 'Enlarge the sheet.', zoom(1.5)),
+    show('zoom out', 'Farther', ['-'], 'Make the sheet smaller.', zoom(1 / 1.5)),
+    show('pan left', 'Move the view left', ['Ctrl+ArrowLeft'], 'Move the view.', pan(120, 0)),
+    show('pan right', 'Move the view right', ['Ctrl+ArrowRight'], 'Move the view.', pan(-120, 0)),
+    show('pan up', 'Move the view up', ['Ctrl+ArrowUp'], 'Move the view.', pan(0, 120)),
+    show('pan down', 'Move the view down', ['Ctrl+ArrowDown'], 'Move the view.', pan(0, -120)),
+    ...TABS.map((tab) =>
+      show(`ledger ${tab}`, `Table of ${tab}`, [], 'Go to this table below the sheet.', () => {
+        desk.view.patch({ tab });
+        document.querySelector<HTMLElement>('[role="grid"]')?.focus();
+      }),
+    ),
+    show('next layer', 'Next layer', ['Shift+l'], 'Draw on the next layer.', () => {
+      const layers = desk.chip()!.layers;
+      const at = layers.findIndex((layer) => layer.id === desk.view.get().layer);
+      const next = layers[(Math.max(0, at) + 1) % layers.length]!;
+      desk.view.patch({ layer: next.id });
+      desk.say(`Drawing on layer ${next.id}.`);
+    }),
+    show('plots', 'Plots', ['u'], 'Pressure and shear along a route, shares against targets, a sweep.', () =>
+      desk.view.patch({ panel: 'plots' }),
+    ),
+  ];
+}
