@@ -12,9 +12,11 @@ export interface LocalFlow {
   readonly section: Section;
   /** Pa/m below which nothing flows; 0 without a yield stress. */
   readonly yieldGradient: number;
+  /** A gradient (Pa/m) in the middle of what the fluid is made for, about which tables are laid. */
+  readonly ordinaryGradient: number;
   /** Flow (m³/s) under a gradient >= 0 (Pa/m), and its derivative. */
   flow(gradient: number, out: Float64Array): void;
-  /** Gradient of a flow >= 0, and its derivative. */
+  /** Gradient of a flow > 0, and its derivative; the yield gradient for none. */
   gradient(flow: number, out: Float64Array): void;
   /** Peak over mean wall stress (null where unbounded) and over mean velocity. */
   peaks(gradient: number): { readonly stress: number | null; readonly velocity: number };
@@ -37,6 +39,7 @@ export function localFlow(
   return {
     section,
     yieldGradient: 0,
+    ordinaryGradient: 1e4,
     flow(gradient, out) {
       out[0] = conductance * gradient;
       out[1] = conductance;

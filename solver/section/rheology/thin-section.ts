@@ -1,36 +1,12 @@
 import type { ShearModel } from '../../fluid/spec.ts';
 import type { Profile } from '../profile.ts';
-import type { Section } from '../section.ts';
 import { sectionOf } from '../section-of.ts';
-import { inverse } from './inverse.ts';
+import { inverse, type Rising } from './inverse.ts';
+import type { LocalFlow } from './local.ts';
+import { resampled } from './resampled.ts';
 import { type ScaledFluid, scaledFluid, stressGain } from './scaled.ts';
 import { STEP, stepOf, tableEnds } from './shape-table.ts';
 import { type ShapeMix, type ShapeTables, shapeTables } from './shapes.ts';
-
-/**
- * Flow of a shear-thinning fluid through one section under a pressure gradient:
- *
- *   Q = K G f / viscosity,   f the fluidity at the mean wall stress G A / P,   K the Newtonian conductance,
- *
- * f from a table of solved flows (cubic with exact slopes, kept monotone; within 3e-4 of a solve).
- */
-export interface ThinSection {
-  readonly section: Section;
-  /** Pa/m below which a yield stress holds everything; 0 without one. */
-  readonly yieldGradient: number;
-  /** Flow (m³/s) and its derivative by the gradient, for a gradient >= 0 (Pa/m), into out[0] and out[1]. */
-  flow(gradient: number, out: Float64Array): void;
-  /** Gradient (Pa/m) that drives a flow >= 0, and its derivative by the flow, into out[0] and out[1]. */
-  gradient(flow: number, out: Float64Array): void;
-  /** Peak over mean wall stress and over mean velocity at a gradient; null as the section's own. */
-  peaks(gradient: number): { readonly stress: number | null; readonly velocity: number };
-}
-
-/**
- * Below its yield stress a fluid stands; the network needs a slope all the same, or it could not tell
- * which way to go. This share of the Newtonian flow is let through, far below what is reported as flow.
- */
-export const LEAK = 1e-10;
 
 const tables = new Map<string, ShapeTables>();
 /** Tables are kept for this many different fluids. */
@@ -46,14 +22,22 @@ function tablesOf(fluid: ScaledFluid): ShapeTables {
   return shapes;
 }
 
-/** @param width mask width and depth, m */
+/**
+ * Flow of a shear-thinning fluid through one section under a pressure gradient:
+ *
+ *   Q = K G f / viscosity,   f the fluidity at the mean wall stress G A / P,   K the Newtonian conductance,
+ *
+ * f from a table of solved flows (cubic with exact slopes, kept monotone; within 3e-4 of a solve).
+ *
+ * @param width mask width and depth, m
+ */
 export function thinSection(
   shear: ShearModel,
   profile: Profile,
   width: number,
   depth: number,
   where = '',
-): ThinSection {
+): LocalFlow {
   const section = sectionOf(profile, width, depth, where);
   const fluid = scaledFluid(shear);
   const { mix, strip, plates } = tablesOf(fluid).partsOf(profile, width, depth, where);
@@ -67,19 +51,28 @@ export function thinSection(
   const yieldGradient = Math.min(main.yieldGradient, side?.yieldGradient ?? Number.POSITIVE_INFINITY);
   const two = new Float64Array(2);
 
-  const flow = (gradient: number, out: Float64Array): void => {
+  const direct: Rising = (gradient, out) => {
     main.flow(gradient, out);
     if (!side) return;
     side.flow(gradient, two);
     out[0] += two[0];
     out[1] += two[1];
   };
+  const ordinaryGradient = fluid.stress / radius;
+  // Where a stress must be turned into a rate first, the whole is worth sampling.
+  const flow = fluid.model.kind === 'carreau' ? resampled(direct, 0, ordinaryGradient) : direct;
   return {
     section,
     yieldGradient,
+    ordinaryGradient,
     flow,
     gradient(wanted, out) {
-      inverse(flow, wanted, (wanted * fluid.viscosity) / section.conductance, out);
+      if (wanted > 0) inverse(flow, wanted, (wanted * fluid.viscosity) / section.conductance, out);
+      else {
+        flow(yieldGradient, out);
+        out[0] = yieldGradient;
+        out[1] = 1 / out[1];
+      }
     },
     peaks(gradient) {
       const { stress, velocity } = main.peaks(gradient);
@@ -115,8 +108,8 @@ function partFlow(fluid: ScaledFluid, mix: ShapeMix, conductance: number, radius
     yieldGradient: yieldStress / perGradient,
     flow(gradient, out) {
       fluidity(gradient * perGradient, at);
-      out[0] = unit * gradient * (at[0] + LEAK);
-      out[1] = unit * (at[0] * (1 + at[1]) + LEAK);
+      out[0] = unit * gradient * at[0];
+      out[1] = unit * at[0] * (1 + at[1]);
     },
     peaks(gradient) {
       const x = stepOf(fluid, gradient * perGradient, yieldStress);

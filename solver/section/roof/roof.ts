@@ -137,16 +137,22 @@ export function openingSlope(law: RoofLaw, pressure: number): number {
 }
 
 /**
- * The potential Φ (Pa) whose slope is `opening`, zero at zero pressure: a Newtonian fluid flows along a
- * uniform channel by Q = (Φ(p1) − Φ(p2)) / R, R the resistance of the rigid channel.
+ * Mean of `opening` over the pressures from `to` to `to + drop`: a Newtonian fluid flows along a uniform
+ * channel by Q = drop · mean / R, R the resistance of the rigid channel. (The potential whose slope is the
+ * opening, divided by the drop before it can cancel.)
  */
-export function openingPotential(law: RoofLaw, pressure: number): number {
+export function meanOpening(law: RoofLaw, drop: number, to: number): number {
   const floor = LOWEST / law.slope;
-  const p = Math.max(pressure, floor);
-  const x = law.slope * p;
+  const high = Math.max(to, to + drop);
+  const low = Math.min(to, to + drop);
+  if (low < floor && high > floor) {
+    const below = (floor - low) / (high - low);
+    return below * opening(law, floor) + (1 - below) * meanOpening(law, high - floor, floor);
+  }
+  const x = Math.max(law.slope * high, LOWEST);
+  const y = Math.max(law.slope * low, LOWEST);
   const [a, b, c] = law.coefficients;
-  const potential = p * (1 + x * (a / 2 + x * (b / 3 + (x * c) / 4)));
-  return pressure < floor ? potential + opening(law, floor) * (pressure - floor) : potential;
+  return 1 + (a / 2) * (x + y) + (b / 3) * (x * x + x * y + y * y) + (c / 4) * (x + y) * (x * x + y * y);
 }
 
 function check(roof: SoftRoof, where: string): void {
