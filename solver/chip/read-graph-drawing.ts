@@ -3,7 +3,8 @@ import type { Finding } from '../problem/finding.ts';
 import type { Chip } from './chip.ts';
 import { type Body, loopsOverlap, outline } from './geometry/body.ts';
 import { addCentreline } from './geometry/centreline.ts';
-import { CURVATURE, Elements, S1, STRIDE } from './geometry/elements.ts';
+import { pointAt } from './geometry/curve.ts';
+import { CURVATURE, Elements, S0, S1, STRIDE } from './geometry/elements.ts';
 import { apart, CORNERS, corners, elementBox } from './geometry/packed.ts';
 import { TOUCH } from './geometry/tolerance.ts';
 
@@ -98,6 +99,12 @@ export class Drawing {
       else high = middle;
     }
     return low;
+  }
+
+  /** Place on a channel's centreline. */
+  placeAt(channel: number, s: number): [number, number] {
+    const id = this.elementAt(channel, s);
+    return pointAt(this.elements.curve(id), s - this.elements.data[id * STRIDE + S0]!);
   }
 
   /** The same, but at a vertex the element that starts there. */

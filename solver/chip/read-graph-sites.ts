@@ -66,14 +66,37 @@ function orderMarks(links: Links, channels: number): Ordered {
 }
 
 /**
- * Whether two neighbouring marks of a channel are one place: closer than the tolerance, or, where the
- * channel goes on through both, closer than half the narrowest channel there, so that the mouths
- * overlap (several crossings at one place).
+ * Unites nodes whose marks on a channel are one place: closer than the tolerance, or, where the channel
+ * goes on through both, closer than half the narrowest channel there, so that the mouths overlap
+ * (several crossings at one place). Decided on the nodes as they stand after the first rule, so that
+ * the order of channels does not matter.
  */
-function onePlace(links: Links, length: number, a: number, b: number, gap: number): boolean {
-  if (gap <= TOUCH) return true;
-  if (links.low[a]! <= TOUCH || links.high[b]! >= length - TOUCH) return false;
-  return gap <= Math.min(links.slim[links.root(links.node[a]!)]!, links.slim[links.root(links.node[b]!)]!);
+function uniteNeighbours(drawing: Drawing, links: Links, { start, order }: Ordered): void {
+  const { node, low, high } = links;
+  const near: number[] = [];
+  for (let c = 0; c + 1 < start.length; c++) {
+    const end = drawing.elements.total(c) - TOUCH;
+    let a = order[start[c]!]!;
+    for (let k = start[c]! + 1; k < start[c + 1]!; k++) {
+      const b = order[k]!;
+      const gap = low[b]! - high[a]!;
+      if (gap <= TOUCH) links.unite(node[a]!, node[b]!);
+      else if (
+        low[a]! > TOUCH &&
+        high[b]! < end &&
+        gap <= Math.max(links.slim[node[a]!]!, links.slim[node[b]!]!)
+      ) {
+        near.push(a, b);
+      }
+      if (high[b]! > high[a]!) a = b;
+    }
+  }
+  const slim = links.slim.slice(0, links.nodes);
+  const roots = near.map((mark) => links.root(node[mark]!));
+  for (let k = 0; k < near.length; k += 2) {
+    const gap = low[near[k + 1]!]! - high[near[k]!]!;
+    if (gap <= Math.min(slim[roots[k]!]!, slim[roots[k + 1]!]!)) links.unite(roots[k]!, roots[k + 1]!);
+  }
 }
 
 /** Unites nodes that are one place on some channel, then numbers the sites in drawing order. */
@@ -85,17 +108,7 @@ export function readSites(
   const { chip, elements } = drawing;
   const channels = chip.channels.length;
   const { start, order } = orderMarks(links, channels);
-  for (let c = 0; c < channels; c++) {
-    let reach = start[c]!;
-    for (let k = start[c]! + 1; k < start[c + 1]!; k++) {
-      const a = order[reach]!;
-      const b = order[k]!;
-      if (onePlace(links, elements.total(c), a, b, links.low[b]! - links.high[a]!)) {
-        links.unite(links.node[a]!, links.node[b]!);
-      }
-      if (links.high[b]! > links.high[a]!) reach = k;
-    }
-  }
+  uniteNeighbours(drawing, links, { start, order });
   const labels = new Labels(chip, links, places);
   const holds: Hold[][] = [];
   for (let c = 0; c < channels; c++) {
@@ -110,7 +123,7 @@ export function readSites(
       const site = labels.site(root, chip.channels[c]!.layer);
       const last = list[list.length - 1];
       const gap = last ? links.low[m]! - last.high : Infinity;
-      if (last && last.site === site && gap <= Math.max(TOUCH, links.slim[root]!)) {
+      if (last && last.site === site && gap <= Math.max(TOUCH, links.stout[root]!)) {
         last.high = Math.max(last.high, links.high[m]!);
         last.coreLow = Math.min(last.coreLow, links.coreLow[m]!);
         last.coreHigh = Math.max(last.coreHigh, links.coreHigh[m]!);

@@ -229,8 +229,9 @@ describe('covered areas that meet', () => {
     expect(findingKinds(graph)).toEqual(['overlap-alongside b']);
     expect(graph.findings[0]!.severity).toBe('warn');
     expect(new Set(graph.cavity).size).toBe(1);
-    const junctions = graph.sites.filter((s) => s.kind === 'junction');
-    expect(junctions.map((s) => Math.round(s.at[0] / 1e3))).toEqual([450, 1550]);
+    expect(graph.pieces.filter((p) => p.channel === 'a').map((p) => p.length / 1000)).toEqual([
+      450, 1100, 450,
+    ]);
   });
 
   test('a corner that pokes into the side of another channel joins them', () => {

@@ -29,7 +29,7 @@ export function restoreLoop(path: Path64, grid: Grid, edges: TrueEdges): Edge[] 
   }
   runs = joinRound(dropSlivers(joinRound(runs), slack));
   if (runs.length === 1) return wholeCircle(runs[0]!);
-  return corners(runs);
+  return fromLeast(corners(runs));
 }
 
 /** The true edges of all bodies, with an index where there are many. */
@@ -63,6 +63,16 @@ export class TrueEdges {
       if (found.length > 0 || reach > 1e10) return found.sort((a, b) => a - b).map((i) => this.#all[i]!);
     }
   }
+}
+
+/** The loop from its leftmost, then lowest corner on, so that equal outlines are equal lists. */
+function fromLeast(loop: Edge[]): Edge[] {
+  let k = 0;
+  for (let i = 1; i < loop.length; i++) {
+    const dx = loop[i]!.x - loop[k]!.x;
+    if (dx < -SAME || (dx <= SAME && loop[i]!.y < loop[k]!.y)) k = i;
+  }
+  return [...loop.slice(k), ...loop.slice(0, k)];
 }
 
 interface Run {
