@@ -49,8 +49,8 @@ function values(argv: readonly string[]): {
     const { csv, json, junctions, accuracy, help } = given;
     return { positionals, values: { csv, json, junctions, accuracy, help } };
   } catch (error) {
-    const { message } = error as Error;
-    throw new Problem('unknown-key', message.split('\n')[0]!.split('. To specify')[0]!, COMMAND, HELP);
+    const [first] = (error as Error).message.split(/\n|\. To specify/);
+    throw new Problem('unknown-key', `${first!.replace(/\.$/, '')}.`, COMMAND, HELP);
   }
 }
 

@@ -98,6 +98,12 @@ function routes({ routes: all }: Result): string[] {
   ];
 }
 
+/** Relative, nought where only rounding is left of it. */
+function offBy(got: number, wanted: number): number {
+  const off = got / Math.abs(wanted) - 1;
+  return Math.abs(off) < 1e-9 ? 0 : off;
+}
+
 const verdict = (met: boolean | null): string => (met === null ? 'not judged' : met ? 'met' : 'MISSED');
 
 function targets(chip: Chip, { targets: all }: Result): string[] {
@@ -119,7 +125,7 @@ function targets(chip: Chip, { targets: all }: Result): string[] {
         head: 'off by',
         kind: 'share',
         digits: 2,
-        values: shown.map(({ wanted, got }) => (got === null ? null : got / Math.abs(wanted) - 1)),
+        values: shown.map(({ wanted, got }) => (got === null ? null : offBy(got, wanted))),
       },
       { head: 'within', kind: 'share', digits: 2, values: shown.map((_, i) => chip.targets[i]!.within) },
       { head: '', words: shown.map(({ met }) => verdict(met)) },

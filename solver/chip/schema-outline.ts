@@ -47,17 +47,16 @@ export function outlineFault(
   | { readonly kind: 'empty' }
   | null {
   const n = outline.length;
+  if (n < 3) return { kind: 'empty' };
   const point = (i: number): Point => outline[i % n]!;
   let area = 0;
   for (let i = 0; i < n; i += 1) {
     const [a, b, c] = [point(i), point(i + 1), point(i + 2)];
     if (a[0] === b[0] && a[1] === b[1]) return { kind: 'repeats', point: (i + 1) % n };
     const back = (b[0] - a[0]) * (c[0] - b[0]) + (b[1] - a[1]) * (c[1] - b[1]) < 0;
-    if (back && turn(a, b, c) === 0)
-      return n < 3 ? { kind: 'empty' } : { kind: 'doubles', point: (i + 1) % n };
+    if (back && turn(a, b, c) === 0) return { kind: 'doubles', point: (i + 1) % n };
     area += turn(point(0), a, b);
   }
-  if (n < 3 || area === 0) return { kind: 'empty' };
   const index = new Flatbush(n);
   for (let i = 0; i < n; i += 1) {
     const [a, b] = [point(i), point(i + 1)];
@@ -80,5 +79,5 @@ export function outlineFault(
     );
     if (other >= 0) return { kind: 'crosses', edges: [i, other] };
   }
-  return null;
+  return area === 0 ? { kind: 'empty' } : null;
 }
