@@ -1,5 +1,6 @@
 import { etchedShape } from '../etched-shape.ts';
 import type { Profile } from '../profile.ts';
+import { shapeOf } from '../solved-unit.ts';
 import { closedTable } from './closed-table.ts';
 import { sectionElements } from './elements.ts';
 import { quarterRectangle, WALL } from './rectangle-mesh.ts';
@@ -68,7 +69,12 @@ export function shapeTables(fluid: ScaledFluid): ShapeTables {
 
   return {
     partsOf(profile, width, depth, where) {
-      if (profile.kind === 'polygon') throw new RangeError(where);
+      if (profile.kind === 'polygon') {
+        const shape = shapeOf(profile, width, depth, where);
+        const copies = shape.symmetric ? 2 : 1;
+        const table = keep(shape.key, () => shapeTable(shapeElements(shape, where), fluid, copies));
+        return { mix: one(table), strip: 0, plates };
+      }
       if (profile.kind === 'circle') {
         return { mix: one(keep('tube', () => closedTable('tube', fluid))), strip: 0, plates };
       }
