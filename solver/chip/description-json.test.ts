@@ -1,7 +1,8 @@
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import { Problem } from '../problem/problem.ts';
-import { findSlip, parseJson } from './description-json.ts';
+import { parseJson } from './description-json.ts';
+import { findSlip } from './description-slip.ts';
 
 const CASES: [text: string, where: string, what: string][] = [
   ['', 'line 1, column 1', 'The text is empty.'],
@@ -37,6 +38,30 @@ test.each(CASES)('%j', (text, where, what) => {
   expect(caught).toBeInstanceOf(Problem);
   expect(caught).toMatchObject({ kind: 'syntax', where, what });
   expect((caught as Problem).remedy).toMatch(/\S\.$|"\.$/);
+});
+
+test('a key that stands twice in one group is named, because one of the two would be lost', () => {
+  const text = '{"a": {"b": ":\\\\\\":", "c": [1]},\n "d": [{"b": 1}, {"b": 2, "w": 3,\n  "b": 4}]}';
+  expect(() => parseJson(text)).toThrow(
+    new Problem(
+      'syntax',
+      'The key "b" stands twice in one group.',
+      'line 3, column 3',
+      'Take one of the two away.',
+    ),
+  );
+  expect(() => parseJson('{"a": 1, "\\u0061": 2}')).toThrow(/The key "a" stands twice/);
+  expect(parseJson(text.replace('"b": 4', '"e": 4'))).toMatchObject({ d: [{}, { e: 4 }] });
+  fc.assert(
+    fc.property(fc.json({ maxDepth: 4 }), (json) => {
+      expect(JSON.stringify(parseJson(json))).toBe(JSON.stringify(JSON.parse(json)));
+    }),
+    { numRuns: 500 },
+  );
+});
+
+test('a long string that never ends is found as well', () => {
+  expect(findSlip(`{"a": "${'x'.repeat(30_000_000)}`)).toMatchObject({ offset: 6 });
 });
 
 test('a byte-order mark is let pass', () => {

@@ -1,176 +1,51 @@
 import { Problem } from '../problem/problem.ts';
 import { BOUNDS } from './bounds.ts';
+import { findSlip, type Slip } from './description-slip.ts';
 
-interface Slip {
-  readonly offset: number;
-  readonly what: string;
-  readonly remedy: string;
-}
-
-const STRING = /"(?:[^"\\\p{Cc}]|[\u007f-\u009f]|\\(?:["\\/bfnrt]|u[0-9a-fA-F]{4}))*/uy;
-const NUMBER = /-?(?:0|[1-9]\d*)(?:\.\d+)?(?:[eE][+-]?\d+)?/y;
-const WORD = /[\p{L}\p{N}_$+.-]+/uy;
-const BLANK = /[ \t\r\n]*/y;
-
-function matchAt(pattern: RegExp, text: string, at: number): string | null {
-  pattern.lastIndex = at;
-  return pattern.exec(text)?.[0] ?? null;
-}
-
-function badString(text: string, at: number, good: string): Slip {
-  const offset = at + good.length;
-  if (offset >= text.length) {
-    return { offset: at, what: 'A string that opens here is never closed.', remedy: 'Close it with ".' };
-  }
-  if (text[offset] === '\\') {
-    return {
-      offset,
-      what: 'A string holds a backslash that begins no escape.',
-      remedy: 'Double the backslash: \\\\.',
-    };
-  }
-  return {
-    offset,
-    what: 'A string holds a line break or control character.',
-    remedy: 'Close the string with " on its line, or write the character as an escape such as \\n.',
-  };
-}
-
-function badValue(text: string, at: number, before: string): Slip {
-  const sign = text[at]!;
-  if (before === ',' && (sign === ']' || sign === '}')) {
-    return { offset: at, what: `A comma stands before "${sign}".`, remedy: 'Take the last comma away.' };
-  }
-  if (sign === '/' || sign === '#') {
-    return {
-      offset: at,
-      what: 'JSON takes no comments.',
-      remedy: 'Take the comment away; "note" holds remarks.',
-    };
-  }
-  if (sign === "'") {
-    return {
-      offset: at,
-      what: 'JSON takes no single quotes.',
-      remedy: 'Write strings between double quotes.',
-    };
-  }
-  const word = matchAt(WORD, text, at)?.slice(0, 40);
-  if (word && /^[+-]?(nan|inf(inity)?)$/i.test(word)) {
-    return { offset: at, what: `${word} is no number in JSON.`, remedy: 'Write a finite number.' };
-  }
-  if (word && /^[+-]?\.?\d/.test(word)) {
-    return {
-      offset: at,
-      what: `${word} is no number in JSON.`,
-      remedy:
-        'Write it with a digit before the point and no leading zero or plus; with a unit, between quotes.',
-    };
-  }
-  if (word) {
-    return {
-      offset: at,
-      what: `${word} is no JSON value.`,
-      remedy: 'Write text and quantities with units between double quotes.',
-    };
-  }
-  return { offset: at, what: `A value is expected here, not "${sign}".`, remedy: 'Write the value.' };
-}
-
-/** Where a text stops being JSON, found by walking it once; null where it is JSON. */
-export function findSlip(text: string): Slip | null {
-  const open: ('{' | '[')[] = [];
-  let state: 'value' | 'first' | 'key' | 'colon' | 'next' = 'value';
-  let before = '';
-  let at = 0;
-  for (;;) {
-    at += matchAt(BLANK, text, at)!.length;
-    const inside = open.at(-1);
-    if (at >= text.length) {
-      if (state === 'next' && !inside) return null;
-      const close = inside === '{' ? '}' : inside === '[' ? ']' : undefined;
-      return {
-        offset: text.length,
-        what: text.trim() === '' ? 'The text is empty.' : 'The text ends too early.',
-        remedy: close
-          ? `Complete it; "${inside}" still needs its "${close}".`
-          : 'Write a chip description in it.',
-      };
-    }
-    const sign = text[at]!;
-    if (state === 'next') {
-      if (!inside) {
-        return { offset: at, what: 'More text follows after the end.', remedy: 'Take away what follows.' };
-      }
-      const close = inside === '{' ? '}' : ']';
-      if (sign === close) open.pop();
-      else if (sign === ',') state = inside === '{' ? 'key' : 'value';
-      else if (sign === '/') return badValue(text, at, before);
-      else {
-        return {
-          offset: at,
-          what: `A comma or "${close}" is expected here.`,
-          remedy: 'Put a comma between two entries, or close the list.',
-        };
-      }
-      before = sign;
-      at += 1;
-    } else if (state === 'colon') {
-      if (sign !== ':') {
-        return {
-          offset: at,
-          what: 'A colon is expected here.',
-          remedy: 'Write ":" between a key and its value.',
-        };
-      }
-      state = 'value';
-      before = sign;
-      at += 1;
-    } else if (state === 'key' || (state === 'first' && inside === '{')) {
-      if (state === 'first' && sign === '}') {
-        open.pop();
-        state = 'next';
-        at += 1;
-      } else if (sign === '"') {
-        const good = matchAt(STRING, text, at)!;
-        if (text[at + good.length] !== '"') return badString(text, at, good);
-        at += good.length + 1;
-        state = 'colon';
-      } else if (sign === '}' || sign === '/' || sign === '#' || sign === "'") {
-        return badValue(text, at, before);
-      } else {
-        return {
-          offset: at,
-          what: 'A key is expected here.',
-          remedy: 'Write the key between double quotes.',
-        };
-      }
-    } else if (state === 'first' && sign === ']') {
-      open.pop();
-      state = 'next';
-      at += 1;
-    } else if (sign === '{' || sign === '[') {
-      open.push(sign);
-      state = 'first';
-      before = sign;
-      at += 1;
-    } else if (sign === '"') {
-      const good = matchAt(STRING, text, at)!;
-      if (text[at + good.length] !== '"') return badString(text, at, good);
-      at += good.length + 1;
-      state = 'next';
-    } else {
-      const word = matchAt(WORD, text, at) ?? '';
-      const whole =
-        word === 'true' || word === 'false' || word === 'null' || matchAt(NUMBER, text, at) === word;
-      if (word === '' || !whole) return badValue(text, at, before);
-      at += word.length;
-      state = 'next';
+/** How many keys a text of JSON writes: its colons outside strings. */
+function keysWritten(text: string): number {
+  let count = 0;
+  for (let i = 0; i < text.length; i += 1) {
+    const code = text.charCodeAt(i);
+    if (code === 0x3a) count += 1;
+    else if (code === 0x22) {
+      do i = text.indexOf('"', i + 1);
+      while (isEscaped(text, i));
     }
   }
+  return count;
 }
 
-/** JSON text to its value; a `Problem` with line and column where it is none. A byte-order mark is let pass. */
+function isEscaped(text: string, at: number): boolean {
+  let from = at;
+  while (text.charCodeAt(from - 1) === 0x5c) from -= 1;
+  return (at - from) % 2 === 1;
+}
+
+/** How many keys were kept of them: of a key that stands twice in one group only the last. */
+function keysKept(value: unknown): number {
+  let count = 0;
+  const rest: unknown[] = [value];
+  while (rest.length > 0) {
+    const next = rest.pop();
+    if (next === null || typeof next !== 'object') continue;
+    const inner: unknown[] = Array.isArray(next) ? next : Object.values(next);
+    if (!Array.isArray(next)) count += inner.length;
+    for (const entry of inner) if (typeof entry === 'object') rest.push(entry);
+  }
+  return count;
+}
+
+function syntaxProblem(text: string, slip: Slip): Problem {
+  const lines = text.slice(0, slip.offset).split('\n');
+  const where = `line ${lines.length}, column ${lines.at(-1)!.length + 1}`;
+  return new Problem('syntax', slip.what, where, slip.remedy);
+}
+
+/**
+ * JSON text to its value; a `Problem` with line and column where it is none, or where a key stands twice
+ * in one group, of which one would be lost. A byte-order mark is let pass.
+ */
 export function parseJson(text: string): unknown {
   if (text.length > BOUNDS.text) {
     throw new Problem(
@@ -181,16 +56,20 @@ export function parseJson(text: string): unknown {
     );
   }
   const bare = text.charCodeAt(0) === 0xfeff ? text.slice(1) : text;
+  let value: unknown;
   try {
-    return JSON.parse(bare);
+    value = JSON.parse(bare);
   } catch {
     const slip = findSlip(bare) ?? {
       offset: 0,
       what: 'This is not JSON.',
       remedy: 'Write the chip as JSON.',
     };
-    const lines = bare.slice(0, slip.offset).split('\n');
-    const where = `line ${lines.length}, column ${lines.at(-1)!.length + 1}`;
-    throw new Problem('syntax', slip.what, where, slip.remedy);
+    throw syntaxProblem(bare, slip);
   }
+  if (keysWritten(bare) !== keysKept(value)) {
+    const slip = findSlip(bare, true);
+    if (slip) throw syntaxProblem(bare, slip);
+  }
+  return value;
 }

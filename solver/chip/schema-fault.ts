@@ -34,9 +34,8 @@ export function at<T>(path: Path, work: () => T): T {
 }
 
 /** Text from outside as a message may show it: short, on one line. */
-export function shown(value: unknown): string {
-  const text = typeof value === 'string' ? value : (JSON.stringify(value, null, 0) ?? String(value));
-  const line = text.replace(/[\p{Cc}\p{Zl}\p{Zp}]+/gu, ' ');
+export function shown(value: string): string {
+  const line = value.slice(0, 80).replace(/[\p{Cc}\p{Zl}\p{Zp}\u202a-\u202e\u2066-\u2069]+/gu, ' ');
   return line.length > 40 ? `${line.slice(0, 40)}…` : line;
 }
 

@@ -87,6 +87,13 @@ const CASES: readonly Case[] = [
   ],
   // Keys.
   [
+    'a key twice',
+    but('"width": 200', '"width": 100, "width": 200'),
+    /key "width" stands twice/,
+    /line 9, column \d+/,
+    /Take one/,
+  ],
+  [
     'an unknown key',
     but('"outline"', '"outlne"'),
     /outlne is no known key/,

@@ -256,6 +256,28 @@ describe('tables', () => {
     expect(out).toMatch(/Balance: flow kept to .* of the throughput; power in .*W, dissipated .*W\./);
   });
 
+  test('a long table is cut on the terminal and whole in the file', async () => {
+    const long = JSON.parse(CHIP) as { channels: unknown[] };
+    for (let i = 0; i < 250; i += 1) {
+      const x = 25_000 + 150 * i;
+      long.channels.push({
+        id: `dead ${i}`,
+        layer: 'flow',
+        path: [
+          [x, 20_000],
+          [x, 24_000],
+        ],
+        width: 50,
+      });
+    }
+    writeFileSync(file('long.json'), JSON.stringify(long));
+    const { out } = await run(file('long.json'), '--csv', file('long.csv'));
+    expect(out).toContain('… and 53 more pieces of channels; --csv FILE holds them all.');
+    expect(records(readFileSync(file('long.csv'), 'utf8')).filter(([kind]) => kind === 'piece')).toHaveLength(
+      253,
+    );
+  });
+
   test('widths of letters, marks and emoji', () => {
     expect(['abc', 'é', 'e\u0301', '流路', '🧪', 'ｱ', 'µL'].map(textWidth)).toEqual([3, 1, 1, 4, 2, 1, 2]);
     expect(wrapped('one two three four', 9, '  ')).toEqual(['one two', '  three', '  four']);
