@@ -44,14 +44,21 @@ export interface PlanShape {
 }
 
 /**
- * The plan shape, the one source for cells, masks and the screen: the union of bodies as lines and true
- * arcs, with re-entrant corners rounded to `fillet` (0: left sharp).
+ * The plan shape, the one source for cells, masks and the screen: the union of `bodies` less `minus` as
+ * lines and true arcs, with re-entrant corners between walls rounded to `fillet` (0: left sharp).
  */
-export function planShape(drawing: Drawing, bodies: readonly PlanBody[], fillet: number): PlanShape {
+export function planShape(
+  drawing: Drawing,
+  bodies: readonly PlanBody[],
+  fillet: number,
+  minus: readonly PlanBody[] = [],
+): PlanShape {
   const patches: Patch[] = [];
   for (const b of bodies) addPatches(drawing, b, patches);
+  const less: Patch[] = [];
+  for (const b of minus) addPatches(drawing, b, less);
   const reduced: Reduced[] = [];
-  const shapes = unite(patches).map((shape) => shape.map((loop) => filletLoop(loop, fillet, reduced)));
+  const shapes = unite(patches, less).map((shape) => shape.map((loop) => filletLoop(loop, fillet, reduced)));
   return { shapes, reduced };
 }
 

@@ -1,6 +1,6 @@
 import { type Area, inArea, nearestEdge } from './geometry/area.ts';
-import { type Body, covers, halfAt, outline } from './geometry/body.ts';
-import { meet, nearest, pointAt } from './geometry/curve.ts';
+import { type Body, commonCorners, halfAt, outline } from './geometry/body.ts';
+import { nearest, pointAt } from './geometry/curve.ts';
 import { meetElements } from './geometry/packed.ts';
 import type { Place } from './read-graph-areas.ts';
 import type { Drawing } from './read-graph-drawing.ts';
@@ -126,16 +126,6 @@ function closest(a: Body, b: Body): [number, number, number] {
     }
   }
   return place;
-}
-
-function commonCorners(a: Body, b: Body): [number, number][] {
-  const points: [number, number][] = [];
-  const ea = outline(a);
-  const eb = outline(b);
-  for (const e of ea) if (covers(b, e.x0, e.y0)) points.push([e.x0, e.y0]);
-  for (const e of eb) if (covers(a, e.x0, e.y0)) points.push([e.x0, e.y0]);
-  for (const p of ea) for (const q of eb) meet(p, q, (s) => points.push(pointAt(p, s)));
-  return points;
 }
 
 /** Two parts of one channel that overlap close to where the path itself joins them: a tight bend, no shortcut. */

@@ -153,3 +153,14 @@ export function halfAt(e: Element, s: number): number {
   const t = (s - e.s0) / (e.s1 - e.s0);
   return t <= 0 ? e.h0 : t >= 1 ? e.h1 : e.h0 + (e.h1 - e.h0) * t;
 }
+
+/** Corners of the ground that two elements have in common; none where they only touch in less than TOUCH. */
+export function commonCorners(a: Body, b: Body): [number, number][] {
+  const points: [number, number][] = [];
+  const ea = outline(a);
+  const eb = outline(b);
+  for (const e of ea) if (covers(b, e.x0, e.y0)) points.push([e.x0, e.y0]);
+  for (const e of eb) if (covers(a, e.x0, e.y0)) points.push([e.x0, e.y0]);
+  for (const p of ea) for (const q of eb) meet(p, q, (s) => points.push(pointAt(p, s)));
+  return points;
+}

@@ -12,7 +12,7 @@ export interface Reduced {
 const FLAT = 0.01;
 
 /**
- * The loop with every re-entrant corner (the wall pokes into the fluid, which lies to the left)
+ * The loop with every re-entrant corner between walls (tag 0; the wall pokes into the fluid, to the left)
  * rounded by an arc of the radius, tangent to both edges; where two roundings would overlap on the
  * edge between them, or one reaches beyond its edge, they get the largest radius that fits.
  */
@@ -30,7 +30,7 @@ export function filletLoop(loop: readonly Edge[], radius: number, reduced: Reduc
     const [ax, ay] = tangentAt(before, before.length);
     const { ux, uy } = edges[k]!;
     const turn = Math.atan2(ax * uy - ay * ux, ax * ux + ay * uy);
-    if (turn < -FLAT) radii[k] = radius;
+    if (turn < -FLAT && loop[k]!.tag === 0 && loop[(k + n - 1) % n]!.tag === 0) radii[k] = radius;
   }
   const cuts: (Rounding | undefined)[] = [];
   for (let pass = 0; pass < 60; pass++) {

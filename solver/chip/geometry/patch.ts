@@ -187,7 +187,7 @@ function tip(
 }
 
 /** The same polygon the other way round; each side keeps its true edge, turned too. */
-function flipped(p: Patch): Patch {
+export function flipped(p: Patch): Patch {
   const n = p.x.length;
   const out = newPatch();
   const turned = new Map<Source, Source>();

@@ -8,7 +8,7 @@ import {
   PolyTree64,
 } from 'clipper2-ts';
 import type { Shape } from '../../mesh/mesh.ts';
-import type { Patch } from './patch.ts';
+import { flipped, type Patch } from './patch.ts';
 import { restoreLoop, TrueEdges } from './restore.ts';
 
 /** Coordinates scaled to at most this stay clear of the library's slow exact products. */
@@ -22,7 +22,7 @@ export interface Grid {
   readonly scale: number;
 }
 
-export function gridFor(patches: readonly Patch[]): Grid {
+function gridFor(patches: readonly Patch[]): Grid {
   let minX = Infinity;
   let minY = Infinity;
   let maxX = -Infinity;
@@ -43,7 +43,7 @@ export function gridFor(patches: readonly Patch[]): Grid {
   return { x, y, scale };
 }
 
-export function toGrid(patch: Patch, grid: Grid): Path64 {
+function toGrid(patch: Patch, grid: Grid): Path64 {
   const path: Path64 = [];
   for (let k = 0; k < patch.x.length; k++) {
     path.push({
@@ -55,18 +55,21 @@ export function toGrid(patch: Patch, grid: Grid): Path64 {
 }
 
 /**
- * The union of bodies as shapes of lines and true arcs: one shape per connected part, outer boundary
- * counter-clockwise first, then its holes. The union itself is done on polygons; each side of the
+ * The union of bodies, less those of `minus`, as shapes of lines and true arcs: one shape per connected
+ * part, outer boundary counter-clockwise first, then its holes. The union itself is done on polygons; each side of the
  * outcome is then led back to the edge it was drawn from, so arcs survive whole and corners are exact.
  */
-export function unite(patches: readonly Patch[]): Shape[] {
+export function unite(patches: readonly Patch[], minus: readonly Patch[] = []): Shape[] {
   if (patches.length === 0) return [];
   const grid = gridFor(patches);
-  const tree = uniteOnGrid(
-    patches.map((p) => toGrid(p, grid)),
-    FillRule.NonZero,
-  );
-  const edges = new TrueEdges([...new Set(patches.flatMap((p) => p.source))]);
+  const clipper = new Clipper64();
+  clipper.addSubject(patches.map((p) => toGrid(p, grid)));
+  if (minus.length > 0) clipper.addClip(minus.map((p) => toGrid(p, grid)));
+  const tree = new PolyTree64();
+  clipper.execute(minus.length > 0 ? ClipType.Difference : ClipType.Union, FillRule.NonZero, tree);
+  // what bounds the fluid from within runs the other way round
+  const all = [...patches, ...minus.map(flipped)];
+  const edges = new TrueEdges([...new Set(all.flatMap((p) => p.source))]);
   const shapes: Shape[] = [];
   collect(tree, (outer, holes) => {
     const loops = [outer, ...holes].map((path) => restoreLoop(path, grid, edges)).filter((l) => l.length > 0);
@@ -75,16 +78,8 @@ export function unite(patches: readonly Patch[]): Shape[] {
   return shapes;
 }
 
-export function uniteOnGrid(paths: Paths64, rule: FillRule): PolyTree64 {
-  const clipper = new Clipper64();
-  clipper.addSubject(paths);
-  const tree = new PolyTree64();
-  clipper.execute(ClipType.Union, rule, tree);
-  return tree;
-}
-
 /** Calls `found` for every outer polygon with its holes. */
-export function collect(tree: PolyPath64, found: (outer: Path64, holes: Paths64) => void): void {
+function collect(tree: PolyPath64, found: (outer: Path64, holes: Paths64) => void): void {
   for (let i = 0; i < tree.count; i++) {
     const outer = tree.child(i);
     const holes: Paths64 = [];
