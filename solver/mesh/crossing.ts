@@ -1,8 +1,11 @@
 import type { Boundary } from './boundary.ts';
 import { Grid } from './grid.ts';
 
+/** Closed lines: piece i runs from point i to point next[i]. */
+type Polylines = Pick<Boundary, 'count' | 'x' | 'y' | 'next'>;
+
 /** A place where two pieces of a cut boundary cross or touch; null where none do. */
-export function crossingPlace(boundary: Boundary): readonly [number, number] | null {
+export function crossingPlace(boundary: Polylines): readonly [number, number] | null {
   const { count, x, y, next } = boundary;
   const boxes = new Float64Array(4 * count);
   for (let i = 0; i < count; i += 1) {
@@ -23,10 +26,13 @@ export function crossingPlace(boundary: Boundary): readonly [number, number] | n
   return found;
 }
 
-function meeting(boundary: Boundary, i: number, k: number): readonly [number, number] | null {
+function meeting(boundary: Polylines, i: number, k: number): readonly [number, number] | null {
   const { x, y, next } = boundary;
   const j = next[i]!;
   const l = next[k]!;
+  const apart = (c: Float64Array): boolean =>
+    Math.max(c[i]!, c[j]!) < Math.min(c[k]!, c[l]!) || Math.max(c[k]!, c[l]!) < Math.min(c[i]!, c[j]!);
+  if (apart(x) || apart(y)) return null;
   const side = (a: number, b: number, c: number): number =>
     (x[b]! - x[a]!) * (y[c]! - y[a]!) - (y[b]! - y[a]!) * (x[c]! - x[a]!);
   const c = side(i, j, k);

@@ -4,14 +4,26 @@ import { EQUILATERAL, equilateralSection } from './equilateral.ts';
 import type { Profile } from './profile.ts';
 import { rectangleSection } from './rectangle.ts';
 import type { Section } from './section.ts';
+import { type SectionOptions, shapeOf, solvedUnit } from './solved-unit.ts';
+import { scaleSection } from './unit-section.ts';
 
 export type { Section } from './section.ts';
+export type { SectionOptions } from './solved-unit.ts';
 
 /**
- * The section of a profile with the given mask width and layer depth, metres. A circle's bore is its
- * width and must equal the depth; a polygon takes neither. `where` is named by a `Problem`.
+ * The section of a profile with the given mask width and layer depth, metres: exact where a closed form
+ * or series exists (rectangle, circle, ellipse, equilateral triangle), else by finite elements to the
+ * accuracy asked for, each shape solved once whatever its size. A circle's bore is its width and must
+ * equal the depth; a polygon takes neither. Throws `Problem` 'profile' for what cannot be made, naming
+ * `where`.
  */
-export function sectionOf(profile: Profile, width: number, depth: number, where = ''): Section {
+export function sectionOf(
+  profile: Profile,
+  width: number,
+  depth: number,
+  where = '',
+  options: SectionOptions = {},
+): Section {
   checkSize(profile, width, depth, where);
   switch (profile.kind) {
     case 'rectangle':
@@ -24,12 +36,8 @@ export function sectionOf(profile: Profile, width: number, depth: number, where 
       break;
     default:
   }
-  throw new Problem(
-    'profile',
-    `A ${profile.kind} section cannot be solved yet.`,
-    where,
-    'Use a rectangle, a circle, an ellipse or an equilateral triangle.',
-  );
+  const shape = shapeOf(profile, width, depth, where);
+  return scaleSection(shape, solvedUnit(shape, options, where));
 }
 
 /** Throws unless width and depth are lengths that the profile can have. */
@@ -39,14 +47,13 @@ export function checkSize(profile: Profile, width: number, depth: number, where:
     ['width', width],
     ['depth', depth],
   ] as const) {
-    if (!(value > 0 && value < Number.POSITIVE_INFINITY)) {
-      throw new Problem(
-        'profile',
-        `The ${name} of the section is ${value} m.`,
-        where,
-        `Give a ${name} above zero.`,
-      );
-    }
+    if (value > 0 && value < Number.POSITIVE_INFINITY) continue;
+    throw new Problem(
+      'profile',
+      `The ${name} of the cross-section is ${value} m.`,
+      where,
+      `Give a ${name} above zero.`,
+    );
   }
   if (profile.kind === 'circle' && Math.abs(width - depth) > 1e-9 * depth) {
     throw new Problem(

@@ -1,0 +1,93 @@
+import type { UnitSection } from './unit-section.ts';
+
+/** Changes whenever the same shape may give other numbers, so that kept sections are not mixed up. */
+export const SECTION_VERSION = 1;
+
+export interface KeptSection {
+  readonly key: string;
+  /** Accuracy that was asked for. */
+  readonly accuracy: number;
+  readonly unit: UnitSection;
+}
+
+/**
+ * Solved shapes by key, free of scale, least recently used dropped beyond `limit`. What it holds is plain
+ * data: a project keeps `entries()` and gives them back to `load`.
+ */
+export class SectionCache {
+  private readonly limit: number;
+  private readonly kept = new Map<string, KeptSection>();
+
+  constructor(limit = 4096) {
+    this.limit = limit;
+  }
+
+  /** The section of that shape as solved for just this accuracy, so that results don't depend on history. */
+  get(key: string, accuracy: number): UnitSection | undefined {
+    const name = nameOf(key, accuracy);
+    const found = this.kept.get(name);
+    if (!found) return undefined;
+    this.kept.delete(name);
+    this.kept.set(name, found);
+    return found.unit;
+  }
+
+  set(key: string, accuracy: number, unit: UnitSection): void {
+    const name = nameOf(key, accuracy);
+    this.kept.delete(name);
+    this.kept.set(name, { key, accuracy, unit });
+    if (this.kept.size > this.limit) {
+      const oldest = this.kept.keys().next();
+      if (!oldest.done) this.kept.delete(oldest.value);
+    }
+  }
+
+  get size(): number {
+    return this.kept.size;
+  }
+
+  /** Least recently used first. */
+  entries(): { readonly version: number; readonly sections: readonly KeptSection[] } {
+    return { version: SECTION_VERSION, sections: [...this.kept.values()] };
+  }
+
+  /** Takes over what another cache held; of another version, or not of this form, nothing. Returns how many. */
+  load(kept: unknown): number {
+    if (!isRecord(kept) || kept.version !== SECTION_VERSION || !Array.isArray(kept.sections)) return 0;
+    let count = 0;
+    for (const section of kept.sections as unknown[]) {
+      if (!isKept(section)) continue;
+      this.set(section.key, section.accuracy, section.unit);
+      count += 1;
+    }
+    return count;
+  }
+}
+
+const nameOf = (key: string, accuracy: number): string => `${accuracy} ${key}`;
+
+function isRecord(value: unknown): value is Record<string, unknown> {
+  return typeof value === 'object' && value !== null;
+}
+
+const isPositive = (value: unknown): boolean => Number.isFinite(value) && (value as number) > 0;
+const isPlace = (value: unknown): boolean =>
+  Array.isArray(value) && value.length === 2 && value.every((part) => Number.isFinite(part));
+
+function isKept(value: unknown): value is KeptSection {
+  if (!isRecord(value) || typeof value.key !== 'string' || !isPositive(value.accuracy)) return false;
+  const unit = value.unit;
+  return (
+    isRecord(unit) &&
+    isPositive(unit.conductance) &&
+    isPositive(unit.top) &&
+    isPlace(unit.topAt) &&
+    (unit.peakShear === null
+      ? unit.peakShearAt === null
+      : isPositive(unit.peakShear) && isPlace(unit.peakShearAt)) &&
+    [unit.floorShear, unit.sideShear, unit.error, unit.shearError].every(Number.isFinite) &&
+    Array.isArray(unit.wall) &&
+    unit.wall.length % 3 === 0 &&
+    unit.wall.every((part) => Number.isFinite(part))
+  );
+}
