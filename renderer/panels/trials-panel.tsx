@@ -117,7 +117,7 @@ function Compared({ held }: { readonly held: Held }) {
   const ports = (result?.ports ?? []).map((port) => ({
     id: port.id,
     now: port.flow,
-    then: held.result?.ports.find((other) => other.id === port.id)?.flow ?? null,
+    before: held.result?.ports.find((other) => other.id === port.id)?.flow ?? null,
   }));
   return (
     <section aria-label={`Compared with ${held.trial.name}`}>
@@ -143,7 +143,7 @@ function Compared({ held }: { readonly held: Held }) {
           {ports.map((port) => (
             <tr key={port.id}>
               <th scope="row">{port.id}</th>
-              <td>{figure(port.then, 'flow')}</td>
+              <td>{figure(port.before, 'flow')}</td>
               <td>{figure(port.now, 'flow')}</td>
             </tr>
           ))}

@@ -3,7 +3,7 @@ import type { Overlay } from '../sheet/overlay.ts';
 import { FIRST_HABITS, type Habits, type ToolName } from '../tools/tool.ts';
 import type { Ref } from './ref.ts';
 
-export const TABS = ['outlets', 'channels', 'routes', 'junctions', 'findings'] as const;
+export const TABS = ['ports', 'channels', 'routes', 'junctions', 'findings'] as const;
 export type Tab = (typeof TABS)[number];
 
 /** A panel that takes the place of the card. */
@@ -44,6 +44,8 @@ export interface View {
   readonly habits: Habits;
   readonly tab: Tab;
   readonly panel: Panel;
+  /** "route:in>out", the one the plots show; '' is the first. */
+  readonly route: Ref;
   readonly palette: boolean;
   readonly files: FileWish | null;
   /** One sentence about what was not done and why; '' where there is nothing to say. */
@@ -61,8 +63,9 @@ export const FIRST_VIEW: View = {
   camera: null,
   size: { width: 0, height: 0 },
   habits: FIRST_HABITS,
-  tab: 'outlets',
+  tab: 'ports',
   panel: 'card',
+  route: '',
   palette: false,
   files: null,
   says: '',

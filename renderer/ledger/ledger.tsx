@@ -1,0 +1,100 @@
+import { useMemo, useState } from 'react';
+import { usePage } from '../page/context.tsx';
+import { useStore } from '../state/store.ts';
+import { TABS, type Tab } from '../state/view.ts';
+import { capital, counted } from '../words/figure.ts';
+import { Grid } from './grid.tsx';
+import { filtered, type Order, ordered, tsvOf } from './table.ts';
+import { countOf, tableOf } from './tables.ts';
+
+/** The tables under the sheet: everything on the sheet, operable without seeing it. */
+export function Ledger() {
+  const { desk } = usePage();
+  const chip = useStore(desk.project)!.document.chip;
+  const { result, graph } = useStore(desk.solver.solved);
+  const tab = useStore(desk.view, (view) => view.tab);
+  const [words, setWords] = useState('');
+  const [orders, setOrders] = useState<Partial<Record<Tab, Order | null>>>({});
+  const table = useMemo(() => tableOf(tab, chip, result, graph), [tab, chip, result, graph]);
+  const order = orders[tab] ?? null;
+  const rows = useMemo(() => ordered(filtered(table, words), table, order), [table, words, order]);
+  const copy = async (): Promise<void> => {
+    try {
+      await navigator.clipboard.writeText(tsvOf(table, rows));
+      desk.say(`Copied ${counted(rows.length, 'row')}; paste into a spreadsheet.`);
+    } catch {
+      desk.say('The clipboard refuses; take the table out under Hand over instead.');
+    }
+  };
+  return (
+    <section className="ledger" aria-label="Ledger">
+      <div className="ledger-head">
+        <div role="tablist" aria-label="Tables">
+          {TABS.map((name) => (
+            <button
+              key={name}
+              type="button"
+              role="tab"
+              id={`tab-${name}`}
+              className="verb"
+              aria-selected={tab === name}
+              aria-controls="ledger-table"
+              tabIndex={tab === name ? 0 : -1}
+              onClick={() => desk.view.patch({ tab: name })}
+              onKeyDown={(event) => {
+                const by = event.key === 'ArrowRight' ? 1 : event.key === 'ArrowLeft' ? -1 : 0;
+                if (by === 0) return;
+                event.preventDefault();
+                const next = TABS[(TABS.indexOf(name) + by + TABS.length) % TABS.length]!;
+                desk.view.patch({ tab: next });
+                document.getElementById(`tab-${next}`)?.focus();
+              }}
+            >
+              {capital(name)} {countOf(name, chip, result, graph)}
+            </button>
+          ))}
+        </div>
+        <div className="ledger-verbs">
+          <input
+            type="search"
+            aria-label="Filter the table"
+            placeholder="Filter"
+            value={words}
+            onChange={(event) => setWords(event.target.value)}
+            onKeyDown={(event) => event.key === 'Escape' && setWords('')}
+          />
+          <button type="button" onClick={copy}>
+            Copy table
+          </button>
+        </div>
+      </div>
+      <div id="ledger-table" className="ledger-body" role="tabpanel" aria-labelledby={`tab-${tab}`}>
+        {rows.length === 0 ? (
+          <p className="soft empty">{emptyText(tab, words, Boolean(result))}</p>
+        ) : (
+          <Grid
+            key={tab}
+            label={`Table of ${tab}`}
+            table={table}
+            rows={rows}
+            order={order}
+            onOrder={(next) => setOrders({ ...orders, [tab]: next })}
+          />
+        )}
+      </div>
+    </section>
+  );
+}
+
+function emptyText(tab: Tab, words: string, solved: boolean): string {
+  if (words) return `Nothing here holds “${words}”.`;
+  if (tab === 'ports') return 'No port is set yet. A flow needs at least two.';
+  if (tab === 'channels') return 'No channel is drawn yet.';
+  if (tab === 'findings')
+    return solved ? 'The checks found nothing to say.' : 'Findings come with the first answer.';
+  if (tab === 'routes')
+    return solved
+      ? 'No route from an inlet to an outlet was followed.'
+      : 'Routes come with the first answer.';
+  return 'No channels meet anywhere yet.';
+}

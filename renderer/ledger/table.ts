@@ -1,0 +1,155 @@
+import { inUnit, type Kind } from '../../solver/chip/units.ts';
+import { unitInPrint } from '../../solver/chip/units-format.ts';
+import type { Ref } from '../state/ref.ts';
+import { unitFor } from '../words/figure.ts';
+
+/** A cell: text, an SI number, or nothing known. */
+export type Cell = string | number | null;
+
+export interface Column {
+  readonly id: string;
+  readonly head: string;
+  /** Of its numbers; text where absent. */
+  readonly kind?: Kind;
+  /** A unit of its own. */
+  readonly unit?: string;
+  readonly signed?: boolean;
+  /** What is typed into a cell is this quantity of the row's part. */
+  readonly edits?: 'name' | 'width' | 'hole' | 'wanted' | 'within';
+  /** Width in the table, px. */
+  readonly wide: number;
+}
+
+export interface Row {
+  readonly ref: Ref;
+  readonly cells: readonly Cell[];
+  /** Indices of cells that miss a target or limit. */
+  readonly missed?: readonly number[];
+}
+
+export interface Table {
+  readonly columns: readonly Column[];
+  readonly rows: readonly Row[];
+}
+
+/** How a column writes its numbers: one unit and one number of decimals, so that points stand in line. */
+export interface Writing {
+  readonly unit: string;
+  readonly decimals: number;
+}
+
+/** Significant digits that the largest figure of a column shows, and the least that a small one keeps. */
+const DIGITS = 4;
+const LEAST = 3;
+const MOST_DECIMALS = 6;
+
+export function writingOf(column: Column, rows: readonly Row[], index: number): Writing {
+  let largest = 0;
+  let smallest = Number.POSITIVE_INFINITY;
+  for (const row of rows) {
+    const value = row.cells[index];
+    if (typeof value !== 'number' || value === 0 || !Number.isFinite(value)) continue;
+    const size = Math.abs(value);
+    largest = Math.max(largest, size);
+    smallest = Math.min(smallest, size);
+  }
+  const unit = column.unit ?? (column.kind ? unitFor(largest, column.kind) : '');
+  if (largest === 0) return { unit, decimals: 0 };
+  const places = (value: number, digits: number): number =>
+    digits - 1 - Math.floor(Math.log10(Math.abs(inUnit(value, unit))) + 1e-9);
+  // a few tiny figures do not make all others long
+  const decimals = Math.max(
+    places(largest, column.signed ? 2 : DIGITS),
+    Math.min(places(smallest, LEAST), places(largest, DIGITS) + 1),
+  );
+  return { unit, decimals: Math.min(MOST_DECIMALS, Math.max(0, decimals)) };
+}
+
+export function cellText(cell: Cell | undefined, column: Column, { unit, decimals }: Writing): string {
+  if (cell === null || cell === undefined) return '–';
+  if (typeof cell === 'string') return cell;
+  if (!Number.isFinite(cell)) return '–';
+  const value = inUnit(cell, unit);
+  if (value !== 0 && (Math.abs(value) >= 1e7 || Math.abs(value) < 0.5 * 10 ** -decimals))
+    return value
+      .toExponential(2)
+      .replace('-', '−')
+      .replace(
+        /e([+−-]?)(\d+)/,
+        (_, sign: string, digits: string) => `e${sign.replace('-', '−').replace('+', '')}${digits}`,
+      );
+  const text = Math.abs(value).toFixed(decimals);
+  if (value < 0) return `−${text}`;
+  return column.signed && value > 0 ? `+${text}` : text;
+}
+
+export const headText = (column: Column, { unit }: Writing): string =>
+  unit === '' ? column.head : `${column.head}, ${unitInPrint(unit)}`;
+
+/** Rows whose text holds every word of the filter. */
+export function filtered(table: Table, words: string): readonly Row[] {
+  const wanted = words.toLowerCase().split(/\s+/).filter(Boolean);
+  if (wanted.length === 0) return table.rows;
+  return table.rows.filter((row) => {
+    const text = row.cells
+      .filter((cell) => typeof cell === 'string')
+      .join(' ')
+      .toLowerCase();
+    return wanted.every((word) => text.includes(word));
+  });
+}
+
+export interface Order {
+  readonly column: string;
+  readonly down: boolean;
+}
+
+const names = new Intl.Collator('en', { numeric: true });
+
+/** Rows in order of a column; what is not known comes last either way. */
+export function ordered(rows: readonly Row[], table: Table, order: Order | null): readonly Row[] {
+  const index = order ? table.columns.findIndex((column) => column.id === order.column) : -1;
+  if (!order || index < 0) return rows;
+  const sign = order.down ? -1 : 1;
+  return [...rows].sort((a, b) => {
+    const x = a.cells[index] ?? null;
+    const y = b.cells[index] ?? null;
+    if (x === null || y === null) return x === y ? 0 : x === null ? 1 : -1;
+    if (typeof x === 'number' && typeof y === 'number') return sign * (x - y);
+    return sign * names.compare(String(x), String(y));
+  });
+}
+
+/** A text that a spreadsheet must not take for a formula. */
+const harmless = (text: string): string => (/^[=+\-@\t\r]/.test(text) ? `'${text}` : text);
+
+function plainCell(cell: Cell | undefined, writing: Writing): string {
+  if (cell === null || cell === undefined) return '';
+  if (typeof cell === 'string') return harmless(cell);
+  // all digits, with a plain minus and point: what a spreadsheet reads as a number
+  return Number.isFinite(cell) ? String(Number(inUnit(cell, writing.unit).toPrecision(12))) : '';
+}
+
+/** The rows as a spreadsheet takes them from the clipboard: tabs between, one line each. */
+export function tsvOf(table: Table, rows: readonly Row[]): string {
+  const writings = table.columns.map((column, i) => writingOf(column, table.rows, i));
+  const clean = (text: string): string => text.replace(/[\t\r\n]+/g, ' ');
+  return [
+    table.columns.map((column, i) => clean(headText(column, writings[i]!))).join('\t'),
+    ...rows.map((row) =>
+      table.columns.map((_, i) => clean(plainCell(row.cells[i], writings[i]!))).join('\t'),
+    ),
+  ].join('\r\n');
+}
+
+/** The whole table by RFC 4180. */
+export function csvOf(table: Table): string {
+  const writings = table.columns.map((column, i) => writingOf(column, table.rows, i));
+  const quoted = (text: string): string => (/[",\r\n]/.test(text) ? `"${text.replaceAll('"', '""')}"` : text);
+  return `${[
+    table.columns.map((column, i) => quoted(headText(column, writings[i]!))).join(','),
+    ...table.rows.map((row) =>
+      table.columns.map((_, i) => quoted(plainCell(row.cells[i], writings[i]!))).join(','),
+    ),
+  ].join('\r\n')}\r\n`;
+}

@@ -1,0 +1,245 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import type { Graph } from '../../solver/chip/graph.ts';
+import type { Result } from '../../solver/chip/result.ts';
+import { pathLength } from '../geometry/path.ts';
+import { driveText } from '../sheet/words.ts';
+import type { Tab } from '../state/view.ts';
+import { placeRef } from '../verdict/answer.ts';
+import { capital } from '../words/figure.ts';
+import type { Cell, Column, Row, Table } from './table.ts';
+
+export { csvOf } from './table.ts';
+
+/** The table of a tab, from the chip and what was solved of it. */
+export function tableOf(tab: Tab, chip: Chip, result: Result | null, graph: Graph | null): Table {
+  switch (tab) {
+    case 'ports':
+      return ports(chip, result);
+    case 'channels':
+      return channels(chip, result);
+    case 'routes':
+      return routes(result);
+    case 'junctions':
+      return junctions(result, graph);
+    default:
+      return findings(chip, result);
+  }
+}
+
+/** How many rows a tab has, without making them. */
+export function countOf(tab: Tab, chip: Chip, result: Result | null, graph: Graph | null): number {
+  switch (tab) {
+    case 'ports':
+      return chip.ports.length;
+    case 'channels':
+      return chip.channels.length;
+    case 'routes':
+      return result?.routes.length ?? 0;
+    case 'junctions':
+      return graph?.sites.filter((site) => site.kind !== 'port' && site.kind !== 'end').length ?? 0;
+    default:
+      return (
+        (result?.findings.length ?? 0) + (result?.limits.filter((limit) => limit.met === false).length ?? 0)
+      );
+  }
+}
+
+const NAME = { id: 'name', wide: 168, edits: 'name' } as const;
+
+function ports(chip: Chip, result: Result | null): Table {
+  const solved = new Map(result?.ports.map((port) => [port.id, port]));
+  const got = new Map(
+    result?.targets.flatMap((target) => (target.port === undefined ? [] : [[target.port, target]])),
+  );
+  const wanted = new Map(chip.targets.flatMap((target) => ('port' in target ? [[target.port, target]] : [])));
+  const byFlow = [...wanted.values()].some((target) => 'flow' in target);
+  const wish = byFlow ? ({ kind: 'flow' } as const) : ({ kind: 'share', unit: '%' } as const);
+  const columns: Column[] = [
+    { ...NAME, head: 'port' },
+    { id: 'drive', head: 'drive', wide: 120 },
+    { id: 'wanted', head: 'wanted', ...wish, edits: 'wanted', wide: 96 },
+    { id: 'got', head: 'got', ...wish, wide: 88 },
+    { id: 'off', head: 'off', kind: 'share', unit: '%', signed: true, wide: 80 },
+    { id: 'share', head: 'share', kind: 'share', unit: '%', wide: 88 },
+    { id: 'flow', head: 'flow in', kind: 'flow', signed: false, wide: 112 },
+    { id: 'pressure', head: 'pressure', kind: 'pressure', wide: 112 },
+    { id: 'hole', head: 'hole', kind: 'length', unit: 'um', edits: 'hole', wide: 88 },
+  ];
+  const rows = chip.ports.map((port): Row => {
+    const wants = wanted.get(port.id);
+    const gets = got.get(port.id);
+    const there = solved.get(port.id);
+    const off = gets && gets.got !== null ? gets.got / gets.wanted - 1 : null;
+    // where wishes are of both kinds, shares are left to their own column
+    const asked = wants && ('flow' in wants ? wants.flow : byFlow ? null : wants.share);
+    return {
+      ref: `port:${port.id}`,
+      cells: [
+        port.id,
+        driveText(port.drive),
+        asked ?? null,
+        asked == null ? null : (gets?.got ?? null),
+        off,
+        there?.share ?? null,
+        there?.flow ?? null,
+        there?.pressure ?? null,
+        port.diameter / 1e9,
+      ],
+      ...(gets && !gets.met && { missed: [3, 4] }),
+    };
+  });
+  return { columns, rows };
+}
+
+function channels(chip: Chip, result: Result | null): Table {
+  const columns: Column[] = [
+    { ...NAME, head: 'channel' },
+    { id: 'layer', head: 'layer', wide: 72 },
+    { id: 'width', head: 'width', kind: 'length', unit: 'um', edits: 'width', wide: 80 },
+    { id: 'length', head: 'length', kind: 'length', unit: 'mm', wide: 88 },
+    { id: 'flow', head: 'flow', kind: 'flow', wide: 104 },
+    { id: 'share', head: 'share', kind: 'share', unit: '%', wide: 80 },
+    { id: 'drop', head: 'drop', kind: 'pressure', wide: 96 },
+    { id: 'speed', head: 'speed', kind: 'velocity', wide: 96 },
+    { id: 'shear', head: 'peak shear', kind: 'stress', wide: 108 },
+    { id: 'reynolds', head: 'Re', kind: 'number', wide: 64 },
+    { id: 'time', head: 'time', kind: 'time', unit: 's', wide: 80 },
+  ];
+  const solved = new Map(result?.channels.map((channel) => [channel.id, channel]));
+  const total = result?.ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0) ?? 0;
+  const limit = chip.limits.reduce(
+    (least, entry) => ('shear' in entry && entry.where === undefined ? Math.min(least, entry.shear) : least),
+    Number.POSITIVE_INFINITY,
+  );
+  const rows = chip.channels.map((channel): Row => {
+    const pieces = solved.get(channel.id)?.pieces ?? [];
+    let flow: number | null = null;
+    let drop: number | null = pieces.length > 0 ? 0 : null;
+    let speed: number | null = null;
+    let shear: number | null = null;
+    let reynolds: number | null = null;
+    let time: number | null = pieces.length > 0 ? 0 : null;
+    for (const piece of pieces) {
+      if (piece.flow !== null && Math.abs(piece.flow) > Math.abs(flow ?? 0)) flow = piece.flow;
+      flow ??= piece.flow;
+      drop = drop === null ? null : drop + piece.pressureDrop;
+      speed = larger(speed, piece.meanVelocity);
+      shear = larger(shear, piece.peakWallShear);
+      reynolds = larger(reynolds, piece.reynolds);
+      time = time === null || piece.residenceTime === null ? null : time + piece.residenceTime;
+    }
+    return {
+      ref: `channel:${channel.id}`,
+      cells: [
+        channel.id,
+        channel.layer,
+        Math.min(...channel.width) / 1e9,
+        pathLength(channel.path, channel.bendRadius) / 1e9,
+        flow,
+        flow === null || total === 0 ? null : Math.abs(flow) / total,
+        drop,
+        speed,
+        shear,
+        reynolds,
+        time,
+      ],
+      ...(shear !== null && shear > limit && { missed: [8] }),
+    };
+  });
+  return { columns, rows };
+}
+
+const larger = (a: number | null, b: number | null): number | null =>
+  b === null ? a : a === null ? b : Math.max(a, b);
+
+function routes(result: Result | null): Table {
+  const columns: Column[] = [
+    { id: 'from', head: 'from', wide: 144 },
+    { id: 'to', head: 'to', wide: 144 },
+    { id: 'share', head: 'share', kind: 'share', unit: '%', wide: 96 },
+    { id: 'time', head: 'time', kind: 'time', unit: 's', wide: 96 },
+    { id: 'shear', head: 'peak shear', kind: 'stress', wide: 112 },
+    { id: 'hug time', head: 'time at the wall', kind: 'time', unit: 's', wide: 128 },
+    { id: 'hug shear', head: 'shear at the wall', kind: 'stress', wide: 136 },
+  ];
+  const rows = (result?.routes ?? []).map(
+    (route): Row => ({
+      ref: `route:${route.from}>${route.to}`,
+      cells: [
+        route.from,
+        route.to,
+        route.share,
+        route.residenceTime,
+        route.peakWallShear,
+        route.wallHugging?.residenceTime ?? null,
+        route.wallHugging?.peakShear ?? null,
+      ],
+    }),
+  );
+  return { columns, rows };
+}
+
+function junctions(result: Result | null, graph: Graph | null): Table {
+  const columns: Column[] = [
+    { id: 'name', head: 'place', wide: 144 },
+    { id: 'kind', head: 'kind', wide: 96 },
+    { id: 'arms', head: 'arms', kind: 'number', wide: 72 },
+    { id: 'x', head: 'right', kind: 'length', unit: 'mm', wide: 96 },
+    { id: 'y', head: 'up', kind: 'length', unit: 'mm', wide: 96 },
+    { id: 'solved', head: 'taken as', wide: 112 },
+    { id: 'shear', head: 'peak shear', kind: 'stress', wide: 112 },
+    { id: 'accuracy', head: 'accuracy', kind: 'share', unit: '%', wide: 96 },
+  ];
+  const cells = new Map(result?.cells.map((cell) => [cell.id, cell]));
+  const rows = (graph?.sites ?? [])
+    .filter((site) => site.kind !== 'port' && site.kind !== 'end')
+    .map((site): Row => {
+      const cell = cells.get(site.name);
+      return {
+        ref: site.name,
+        cells: [
+          site.name.replace(':', ' '),
+          site.kind,
+          site.arms.length,
+          site.at[0] / 1e9,
+          site.at[1] / 1e9,
+          cell ? 'solved' : 'ideal',
+          cell?.peakWallShear ?? null,
+          cell?.accuracy ?? null,
+        ],
+      };
+    });
+  return { columns, rows };
+}
+
+const SEVERITY = { stop: 'stop', warn: 'take care', note: 'note' } as const;
+
+function findings(chip: Chip, result: Result | null): Table {
+  const columns: Column[] = [
+    { id: 'severity', head: 'weight', wide: 88 },
+    { id: 'where', head: 'where', wide: 136 },
+    { id: 'says', head: 'what was found', wide: 440 },
+    { id: 'do', head: 'what to do', wide: 320 },
+  ];
+  const missed = (result?.limits ?? [])
+    .filter((limit) => limit.met === false)
+    .map(
+      (limit): Row => ({
+        ref: placeRef(limit.where, chip) ?? 'chip',
+        cells: [
+          'missed',
+          limit.where,
+          `The limit ${limit.name} is passed.`,
+          'Widen it, or let less flow.',
+        ] as Cell[],
+        missed: [0],
+      }),
+    );
+  const rows = (result?.findings ?? []).map(
+    (finding): Row => ({
+      ref: placeRef(finding.where, chip) ?? 'chip',
+      cells: [SEVERITY[finding.severity], finding.where, capital(finding.says), finding.do],
+    }),
+  );
+  return { columns, rows: [...missed, ...rows] };
+}

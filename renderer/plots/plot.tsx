@@ -1,0 +1,89 @@
+import Plotly, { type Data, type Layout } from 'plotly.js-dist-min';
+import { useEffect, useReducer, useRef } from 'react';
+import { onTheme, palette } from '../look/theme.ts';
+import { FIGURE_FACE, SIZES } from '../look/tokens.ts';
+
+// The page's own stylesheet holds the few rules that plotly would write into the page; a marked element
+// of this name tells it not to.
+if (!document.getElementById('plotly.js-style-global')) {
+  const mark = document.createElement('div');
+  mark.id = 'plotly.js-style-global';
+  mark.className = 'no-inline-styles';
+  mark.hidden = true;
+  document.body.append(mark);
+}
+
+export interface PlotProps {
+  readonly title: string;
+  readonly data: readonly Data[];
+  readonly across: string;
+  readonly up: string;
+  /** Lines drawn from side to side, with their words. */
+  readonly limits?: readonly { readonly at: number; readonly says: string }[];
+  readonly more?: Partial<Layout>;
+  /** What the plot says, for those who do not see it. */
+  readonly says: string;
+}
+
+/** One plot in the page's own type and colours. */
+export function Plot({ title, data, across, up, limits = [], more, says }: PlotProps) {
+  const surface = useRef<HTMLDivElement>(null);
+  const [, again] = useReducer((n: number) => n + 1, 0);
+  useEffect(() => onTheme(again), []);
+  useEffect(() => {
+    const look = palette();
+    const axis = {
+      gridcolor: look.line,
+      linecolor: look.line,
+      zerolinecolor: look.line,
+      tickcolor: look.line,
+      ticks: 'outside' as const,
+      automargin: true,
+    };
+    void Plotly.react(
+      surface.current!,
+      [...data],
+      {
+        margin: { l: 48, r: 8, t: 8, b: 36 },
+        paper_bgcolor: look.card,
+        plot_bgcolor: look.card,
+        font: { family: FIGURE_FACE, size: SIZES.note, color: look.soft },
+        xaxis: { ...axis, title: { text: across } },
+        yaxis: { ...axis, title: { text: up } },
+        showlegend: false,
+        shapes: limits.map(({ at }) => ({
+          type: 'line' as const,
+          xref: 'paper' as const,
+          x0: 0,
+          x1: 1,
+          y0: at,
+          y1: at,
+          line: { color: look.alarm, width: 1, dash: 'dash' as const },
+        })),
+        annotations: limits.map(({ at, says: words }) => ({
+          xref: 'paper' as const,
+          x: 1,
+          y: at,
+          text: words,
+          showarrow: false,
+          xanchor: 'right' as const,
+          yanchor: 'bottom' as const,
+          font: { color: look.alarm },
+        })),
+        hoverlabel: { bgcolor: look.card, bordercolor: look.soft, font: { color: look.ink } },
+        ...more,
+      } as Partial<Layout>,
+      { displayModeBar: false, responsive: true, doubleClick: false },
+    );
+  });
+  useEffect(() => {
+    const element = surface.current!;
+    return () => Plotly.purge(element);
+  }, []);
+  return (
+    <figure className="plot">
+      <figcaption>{title}</figcaption>
+      <div ref={surface} className="surface" role="img" aria-label={says} />
+    </figure>
+  );
+}
