@@ -1,8 +1,10 @@
 import type { Chip } from './chip/chip.ts';
 import type { Graph } from './chip/graph.ts';
-import type { DuctMemory } from './lump/lump.ts';
+import { lawMemory } from './lump/laws.ts';
+import type { Lumped, LumpMemory } from './lump/lump.ts';
 import { type PreparedNetwork, prepareNetwork } from './network/prepare.ts';
 import { solveNetwork } from './network/solve-network.ts';
+import { solveNonlinear } from './network/solve-nonlinear.ts';
 import type { NetworkSolution, NetworkSpec } from './network/spec.ts';
 
 /**
@@ -10,25 +12,35 @@ import type { NetworkSolution, NetworkSpec } from './network/spec.ts';
  * empty memory gives the same result, only later.
  */
 export interface Memory {
-  readonly ducts: DuctMemory;
+  readonly lumps: LumpMemory;
   /** The last drawing's graph where nothing that it is read from has changed, else a new one. */
   graph(chip: Chip, read: (chip: Chip) => Graph): Graph;
-  /** Solves, reusing the order and symbolic factorisation of the last network of the same topology. */
-  network(spec: NetworkSpec): NetworkSolution;
+  /**
+   * Solves, reusing the order and symbolic factorisation of the last network of the same topology, and
+   * its pressures as a start where ducts follow laws of their own.
+   */
+  network(lumped: Lumped): NetworkSolution;
 }
 
 export function emptyMemory(): Memory {
   let last: { chip: Chip; graph: Graph } | null = null;
   let prepared: { spec: NetworkSpec; network: PreparedNetwork } | null = null;
+  let start: Float64Array | undefined;
   return {
-    ducts: new Map(),
+    lumps: { ducts: new Map(), laws: lawMemory() },
     graph(chip, read) {
       if (!last || !sameDrawing(last.chip, chip)) last = { chip, graph: read(chip) };
       return last.graph;
     },
-    network(spec) {
-      if (!prepared || !sameTopology(prepared.spec, spec)) prepared = { spec, network: prepareNetwork(spec) };
-      return solveNetwork(spec, prepared.network);
+    network({ spec, laws }) {
+      if (!prepared || !sameTopology(prepared.spec, spec)) {
+        prepared = { spec, network: prepareNetwork(spec) };
+        start = undefined;
+      }
+      if (!laws) return solveNetwork(spec, prepared.network);
+      const solved = solveNonlinear(spec, laws, prepared.network, start);
+      start = solved.faults.length === 0 ? solved.pressure : undefined;
+      return solved;
     },
   };
 }

@@ -1,11 +1,10 @@
 import type { Chip } from './chip/chip.ts';
 import { readGraph } from './chip/read-graph.ts';
 import type { Result } from './chip/result.ts';
-import { type Fluid, fluidOf } from './fluid/fluid.ts';
+import { fluidOf } from './fluid/fluid.ts';
 import { checkDrives } from './lump/floating.ts';
 import { lump } from './lump/lump.ts';
 import { emptyMemory, type Memory } from './memory.ts';
-import { Problem } from './problem/problem.ts';
 import { report } from './report/report.ts';
 
 export interface SolveOptions {
@@ -21,24 +20,10 @@ export interface SolveOptions {
  * @param memory what may be kept between solves of a chip that is being edited
  */
 export function solve(chip: Chip, _options: SolveOptions = {}, memory: Memory = emptyMemory()): Result {
-  const fluid = newtonian(fluidOf(chip.fluid));
+  const fluid = fluidOf(chip.fluid);
   const graph = memory.graph(chip, readGraph);
   const drives = checkDrives(chip, graph, fluid.density);
-  const lumped = lump(chip, graph, fluid.viscosity, fluid.density, memory.ducts);
-  const flow = memory.network(lumped.spec);
+  const lumped = lump(chip, graph, fluid, memory.lumps);
+  const flow = memory.network(lumped);
   return report(chip, graph, fluid, lumped, flow, drives);
-}
-
-/** The fluid with its one viscosity. */
-function newtonian(fluid: Fluid): Fluid & { readonly viscosity: number } {
-  const { viscosity } = fluid;
-  if (viscosity === null) {
-    throw new Problem(
-      'fluid',
-      'A shear-thinning fluid has no one viscosity.',
-      'fluid',
-      'Give the viscosity at the shear rate of your channels.',
-    );
-  }
-  return { ...fluid, viscosity };
 }

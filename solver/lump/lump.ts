@@ -1,66 +1,96 @@
 import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
+import type { Fluid } from '../fluid/fluid.ts';
 import type { Drive, NetworkSpec } from '../network/spec.ts';
 import type { Profile } from '../section/profile.ts';
+import { type DuctFlowLaw, ordinaryViscosity } from '../section/rheology/duct-law.ts';
+import type { Rheology } from '../section/rheology/local.ts';
 import { driveOf } from './drives.ts';
 import { type Duct, ductOf } from './duct.ts';
+import { chipLaws, type LawMemory } from './laws.ts';
 import { depthOf, idealStretches, type Stretch } from './stretches.ts';
 
 /** The chip lumped into a network of hydraulic resistances, with the way back to the drawing. */
 export interface Lumped {
   readonly spec: NetworkSpec;
-  /** In the order of the network's ducts. */
+  /** In the order of the network's ducts; ducts beyond them are tubing. */
   readonly stretches: readonly Stretch[];
   readonly ducts: readonly Duct[];
+  /** Of every duct of the network, tubing included; null where all are linear. */
+  readonly laws: readonly DuctFlowLaw[] | null;
+  /** Pa s: the fluid's own, or for a shear-thinning one what its linear start is made with. */
+  readonly viscosity: number;
   /** Node of each port, and its drive in the network (-1 where closed), in the chip's order of ports. */
   readonly portNode: Int32Array;
   readonly portDrive: Int32Array;
 }
 
-/** Ducts by layer and widths, kept between solves; cleared when it grows beyond what a chip can need. */
-export type DuctMemory = Map<string, Duct>;
+/** What is kept between solves: ducts by layer and widths, laws by fluid. */
+export interface LumpMemory {
+  readonly ducts: Map<string, Duct>;
+  readonly laws: LawMemory;
+}
+/** The map of ducts is cleared when it grows beyond what a chip can need. */
 const MOST_DUCTS = 500_000;
 
-/**
- * The network with ideal junctions.
- * @param viscosity Pa s, @param density kg/m^3
- */
-export function lump(
-  chip: Chip,
-  graph: Graph,
-  viscosity: number,
-  density: number,
-  memory: DuctMemory,
-): Lumped {
-  if (memory.size > MOST_DUCTS) memory.clear();
+/** The network with ideal junctions. */
+export function lump(chip: Chip, graph: Graph, fluid: Fluid, memory: LumpMemory): Lumped {
+  if (memory.ducts.size > MOST_DUCTS) memory.ducts.clear();
+  const rheology: Rheology = fluid.shear ? { shear: fluid.shear } : { viscosity: fluid.viscosity! };
+  const viscosity = ordinaryViscosity(rheology);
   const stretches = idealStretches(graph);
-  const ducts = stretches.map((stretch) => stretchDuct(chip, graph, stretch, memory));
-  const resistance = new Float64Array(stretches.length);
-  const ductFrom = new Int32Array(stretches.length);
-  const ductTo = new Int32Array(stretches.length);
-  stretches.forEach((stretch, index) => {
-    ductFrom[index] = stretch.from;
-    ductTo[index] = stretch.to;
-    resistance[index] = viscosity * ducts[index].resistance * stretch.length;
-  });
+  const ducts = stretches.map((stretch) => stretchDuct(chip, graph, stretch, memory.ducts));
+  const from = stretches.map((stretch) => stretch.from);
+  const to = stretches.map((stretch) => stretch.to);
+  const resistance = stretches.map((stretch, index) => viscosity * ducts[index].resistance * stretch.length);
+
+  const laws = chipLaws(chip, graph, rheology, stretches, memory.laws);
   const drives: Drive[] = [];
   const portDrive = new Int32Array(chip.ports.length).fill(-1);
+  let nodeCount = graph.sites.length;
   chip.ports.forEach((port, index) => {
-    const drive = driveOf(port, viscosity, density);
+    const drive = driveOf(port, viscosity, fluid.density);
     if (!drive) return;
     portDrive[index] = drives.length;
-    drives.push({ node: graph.portSite[index], ...drive });
+    let node = graph.portSite[index];
+    if (!laws) {
+      drives.push({ node, ...drive });
+      return;
+    }
+    // The fluid thins in the tubing too: each tube is a duct of its own, from the outside to the chip.
+    for (const { bore, length } of [...port.tubing].reverse()) {
+      from.push(nodeCount);
+      to.push(node);
+      resistance.push((viscosity * 128 * length) / (Math.PI * bore ** 4));
+      laws.push(
+        memory.laws.of(rheology).law({ profile: CIRCLE, width: [bore, bore], depth: bore, length }, port.id),
+      );
+      node = nodeCount;
+      nodeCount += 1;
+    }
+    drives.push({ node, kind: drive.kind, value: drive.value, series: 0 });
   });
   return {
-    spec: { nodeCount: graph.sites.length, ductFrom, ductTo, resistance, blocks: [], drives },
+    spec: {
+      nodeCount,
+      ductFrom: Int32Array.from(from),
+      ductTo: Int32Array.from(to),
+      resistance: Float64Array.from(resistance),
+      blocks: [],
+      drives,
+    },
     stretches,
     ducts,
+    laws,
+    viscosity,
     portNode: graph.portSite,
     portDrive,
   };
 }
 
-function stretchDuct(chip: Chip, graph: Graph, stretch: Stretch, memory: DuctMemory): Duct {
+const CIRCLE: Profile = { kind: 'circle' };
+
+function stretchDuct(chip: Chip, graph: Graph, stretch: Stretch, memory: Map<string, Duct>): Duct {
   const piece = graph.pieces[stretch.piece];
   const layer = chip.layers[piece.layerIndex];
   const key = `${profileKey(layer.profile)} ${layer.depth} ${stretch.width[0]} ${stretch.width[1]}`;

@@ -1,6 +1,7 @@
 import type { PieceResult } from '../chip/result.ts';
 import type { Duct } from '../lump/duct.ts';
 import type { Stretch } from '../lump/stretches.ts';
+import type { DuctFlowLaw } from '../section/rheology/duct-law.ts';
 
 /**
  * What flows in one stretch, from its flow and the figures of its duct:
@@ -48,5 +49,37 @@ export function pieceResult(
     meanWallShear: viscosity * size * duct.meanShear,
     residenceTime: size > 0 ? (duct.area * stretch.length) / size : null,
     accuracy: duct.error,
+  };
+}
+
+/**
+ * The same for a duct that follows a law of its own (a shear-thinning fluid, a soft roof): what the law
+ * says of its state at the pressures of its ends. The resistance is pressure drop over flow, the Reynolds
+ * number stands on the viscosity that a constant one would need for the same drop.
+ */
+export function lawPieceResult(
+  stretch: Stretch,
+  duct: Duct,
+  law: DuctFlowLaw,
+  flow: number | null,
+  pFrom: number,
+  pTo: number,
+  density: number,
+): PieceResult {
+  const pressureDrop = pFrom - pTo || 0;
+  const size = Math.abs(flow ?? 0);
+  const apparent =
+    size > 0 ? Math.abs(pressureDrop) / (size * duct.resistance * stretch.length) : Number.POSITIVE_INFINITY;
+  const plain = pieceResult(stretch, duct, flow, pressureDrop, apparent, density);
+  if (flow === null) return { ...plain, resistance: 0 };
+  const state = law.state(pFrom, pTo);
+  return {
+    ...plain,
+    resistance: size > 0 ? Math.abs(pressureDrop) / size : 0,
+    reynolds: size > 0 ? plain.reynolds : 0,
+    peakVelocity: state.peakVelocity,
+    peakWallShear: state.peakShear,
+    meanWallShear: state.meanShear,
+    residenceTime: size > 0 ? plain.residenceTime : null,
   };
 }

@@ -8,8 +8,9 @@ import type { Lumped } from '../lump/lump.ts';
 import { NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
+import { faultFindings } from './faults.ts';
 import { limitResults } from './limits.ts';
-import { pieceResult } from './pieces.ts';
+import { lawPieceResult, pieceResult } from './pieces.ts';
 import { stillDucts } from './still.ts';
 import { targetResults } from './targets.ts';
 
@@ -17,22 +18,19 @@ import { targetResults } from './targets.ts';
 export function report(
   chip: Chip,
   graph: Graph,
-  fluid: Fluid & { readonly viscosity: number },
+  fluid: Fluid,
   lumped: Lumped,
   flow: NetworkSolution,
   drives: DriveCheck,
 ): Result {
   const flows = ductFlows(graph, lumped, flow, drives);
-  const pieces = lumped.stretches.map((stretch, index) =>
-    pieceResult(
-      stretch,
-      lumped.ducts[index],
-      flows[index],
-      flow.pressure[stretch.from] - flow.pressure[stretch.to] || 0,
-      fluid.viscosity,
-      fluid.density,
-    ),
-  );
+  const pieces = lumped.stretches.map((stretch, index) => {
+    const duct = lumped.ducts[index];
+    const [pFrom, pTo] = [flow.pressure[stretch.from] || 0, flow.pressure[stretch.to] || 0];
+    return lumped.laws
+      ? lawPieceResult(stretch, duct, lumped.laws[index], flows[index], pFrom, pTo, fluid.density)
+      : pieceResult(stretch, duct, flows[index], pFrom - pTo, lumped.viscosity, fluid.density);
+  });
   const channels = byChannel(chip, graph, lumped, pieces);
   const ports = portResults(chip, graph, lumped, flow, drives);
   const total = ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0);
@@ -61,6 +59,7 @@ export function report(
     findings: [
       ...graph.findings,
       ...drives.findings,
+      ...faultFindings(graph, flow),
       ...unresolvedFindings(lumped, graph, flows),
       ...limits.findings,
       ...idealNote(graph),
@@ -76,8 +75,12 @@ function ductFlows(
   drives: DriveCheck,
 ): (number | null)[] {
   const still = stillDucts(lumped.spec);
-  return lumped.stretches.map(({ piece }, index) =>
-    still[index] === 1 || drives.still.has(graph.cavity[graph.pieces[piece].from])
+  const held = new Uint8Array(lumped.spec.nodeCount);
+  for (const fault of flow.faults) {
+    if (fault.kind === 'no-flow') for (const node of fault.nodes) held[node] = 1;
+  }
+  return lumped.stretches.map(({ piece, from }, index) =>
+    still[index] === 1 || drives.still.has(graph.cavity[graph.pieces[piece].from]) || held[from] === 1
       ? 0
       : resolved(flow.ductFlow[index], flow.ductUnresolved[index]),
   );
@@ -103,7 +106,10 @@ function portResults(
   const total = flows.reduce<number>((sum, value) => sum + Math.max(0, value ?? 0), 0);
   return chip.ports.map((port, index) => {
     const value = flows[index];
-    const pressure = flow.pressure[lumped.portNode[index]];
+    // Where nothing moves for want of a pressure field, a port still has what its own drive imposes.
+    const solved = flow.pressure[lumped.portNode[index]];
+    const imposed = lumped.portDrive[index] < 0 ? 0 : flow.drivePressure[lumped.portDrive[index]];
+    const pressure = Number.isFinite(solved) ? solved : imposed;
     return {
       id: port.id,
       pressure: Number.isFinite(pressure) ? pressure : 0,
@@ -157,7 +163,7 @@ function idealNote(graph: Graph): Finding[] {
       kind: 'ideal-junctions',
       severity: 'note',
       where: first.name,
-      says: `${junctions === 1 ? 'The junction is' : `All ${junctions} junctions are`} taken as ideal: one pressure each, channels counted to the crossing of their centrelines.`,
+      says: `${junctions === 1 ? 'The junction is' : `The ${junctions} junctions are`} taken as ideal: one pressure each, channels counted to the crossing of their centrelines.`,
       do: 'Solve the junctions for compact networks, where this can be off by tens of per cent.',
       at: [first.at[0] / NANOMETRES, first.at[1] / NANOMETRES],
     },

@@ -97,4 +97,4 @@ test(`${SEEDS} sequences of ${EDITS} edits: the live result is the fresh one, an
   // The walk must mostly stay among chips that can be solved, or it would prove little.
   expect(solved).toBeGreaterThan((SEEDS * EDITS) / 2);
   expect(refused).toBeLessThan((SEEDS * EDITS) / 4);
-});
+}, 300_000);
