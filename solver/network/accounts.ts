@@ -19,6 +19,8 @@ interface Solved {
   readonly flow: Float64Array;
   /** m³/s of each edge by its law at these pressures. */
   readonly lawFlow: Float64Array;
+  /** m³/s of the largest leak through a plug, per part: what is not clearly above it is not resolved. */
+  readonly leak?: Float64Array;
   readonly faults: readonly Fault[];
 }
 
@@ -29,7 +31,7 @@ export function accounts(spec: NetworkSpec, network: PreparedNetwork, solved: So
   const { injected, supplied, coarse, fine, flow, lawFlow, faults } = solved;
   const state = new Uint8Array(parts.count);
   for (const { kind, nodes: own } of faults)
-    state[parts.of[own[0]]] = kind === 'no-drive' ? AT_REST : UNKNOWN;
+    state[parts.of[own[0]]] = kind === 'no-drive' || kind === 'no-flow' ? AT_REST : UNKNOWN;
 
   const pressure = new Float64Array(nodes);
   for (let i = 0; i < nodes; i += 1) {
@@ -48,7 +50,9 @@ export function accounts(spec: NetworkSpec, network: PreparedNetwork, solved: So
     const at = driveNode[d];
     const part = parts.of[at];
     // Equal pressures given twice at one node share its flow.
-    const q = kind === 'flow' ? value : state[part] === ANSWERED ? supplied[at] / sharing[at] : Number.NaN;
+    const given =
+      state[part] === ANSWERED ? supplied[at] / sharing[at] : state[part] === AT_REST ? 0 : Number.NaN;
+    const q = kind === 'flow' ? value : given;
     const p = kind === 'flow' ? pressure[node] + series * q : value;
     driveFlow[d] = q;
     drivePressure[d] = p;
@@ -97,14 +101,15 @@ export function accounts(spec: NetworkSpec, network: PreparedNetwork, solved: So
     lawResidual = Math.max(lawResidual, off / scale);
   }
 
+  const floor = through.map((q, part) => Math.max(RESOLVED * q, 10 * (solved.leak?.[part] ?? 0)));
   const ductFlow = flow.slice(0, blockStart[0]);
   const ductUnresolved = new Uint8Array(ductFlow.length);
   for (let e = 0; e < ductFlow.length; e += 1) {
-    if (unresolved(ductFlow[e], through[parts.of[from[e]]])) ductUnresolved[e] = 1;
+    if (unresolved(ductFlow[e], floor[parts.of[from[e]]])) ductUnresolved[e] = 1;
   }
   const driveUnresolved = new Uint8Array(driveFlow.length);
   for (let d = 0; d < driveFlow.length; d += 1) {
-    if (unresolved(driveFlow[d], through[parts.of[driveNode[d]]])) driveUnresolved[d] = 1;
+    if (unresolved(driveFlow[d], floor[parts.of[driveNode[d]]])) driveUnresolved[d] = 1;
   }
   return {
     pressure: pressure.slice(0, spec.nodeCount),
@@ -124,8 +129,8 @@ export function accounts(spec: NetworkSpec, network: PreparedNetwork, solved: So
 }
 
 /** A flow that is exactly zero (a dead end) is known, not lost in round-off. */
-function unresolved(flow: number, throughput: number): boolean {
-  return flow !== 0 && Math.abs(flow) < RESOLVED * throughput;
+function unresolved(flow: number, floor: number): boolean {
+  return flow !== 0 && Math.abs(flow) < floor;
 }
 
 /** m³/s into a block at each face, from the flows of its edges, which run from the later face to the earlier. */

@@ -41,9 +41,10 @@ export interface Fault {
   /**
    * no-drive: nothing drives this part, its pressure is anyone's guess. no-reference: only flows are given
    * there. contradiction: two pressures are given at one node. singular: the pressures are not determined
-   * though a pressure is given (a block that passes nothing between its faces).
+   * though a pressure is given (a block that passes nothing between its faces). no-flow: a yield stress holds
+   * all of it still. not-converged: its laws did not lead to a balance.
    */
-  readonly kind: 'no-drive' | 'no-reference' | 'contradiction' | 'singular';
+  readonly kind: 'no-drive' | 'no-reference' | 'contradiction' | 'singular' | 'no-flow' | 'not-converged';
   /** All nodes of the part, ascending. */
   readonly nodes: Int32Array;
   /** The drives at fault, by index: those that contradict, or the flows that lack a reference. */
@@ -53,7 +54,7 @@ export interface Fault {
 export interface NetworkSolution {
   /** Pa, nodeCount; not a number in a part that has a fault. */
   readonly pressure: Float64Array;
-  /** m³/s of each duct; 0 in a part without drives, not a number in a part that has another fault. */
+  /** m³/s of each duct; 0 in a part that is at rest (no-drive, no-flow), not a number in a part that has another fault. */
   readonly ductFlow: Float64Array;
   /** m³/s into each block at each of its faces. */
   readonly blockFlow: readonly Float64Array[];

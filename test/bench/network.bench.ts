@@ -1,8 +1,11 @@
 import { execFileSync } from 'node:child_process';
 import { join } from 'node:path';
+import type { DuctLaw } from '../../solver/network/law.ts';
 import { prepareNetwork } from '../../solver/network/prepare.ts';
 import { solveNetwork } from '../../solver/network/solve-network.ts';
+import { solveNonlinear } from '../../solver/network/solve-nonlinear.ts';
 import type { NetworkSpec } from '../../solver/network/spec.ts';
+import { cassonTube, powerLaw, softRoof } from '../network/laws.ts';
 import { gridNetwork, treeNetwork } from './native/grid-network.ts';
 import { Python } from './native/scipy.ts';
 import type { BenchRow } from './row.ts';
@@ -60,6 +63,41 @@ async function compared(
   return [row('cold', cold, targets[0]), row('values only', again, targets[1])];
 }
 
+/** Fluids and walls whose flow is not in proportion, each against one linear solve of the same network run in turn. */
+function nonlinear(): BenchRow[] {
+  const spec = gridNetwork(23);
+  const prepared = prepareNetwork(spec);
+  const kinds: [string, (r: number, e: number) => DuctLaw][] = [
+    ['shear-thinning (power law, n = 0.5)', (r) => powerLaw(r, 0.5, 20)],
+    ['yield stress (Casson)', (r) => cassonTube(r, 2)],
+    ['soft roofs of two stiffnesses', (r, e) => softRoof(r, 1e-3 * (1 + (e % 2)))],
+  ];
+  return kinds.map(([kind, law]) => {
+    const laws = Array.from(spec.resistance, law);
+    const linear: number[] = [];
+    const times: number[] = [];
+    for (let run = -40; run < 101; run += 1) {
+      const one = clock(() => solveNetwork(spec, prepared));
+      const other = clock(() => {
+        if (solveNonlinear(spec, laws, prepared).faults.length > 0)
+          throw new Error(`${kind} was not solved.`);
+      });
+      if (run < 0) continue;
+      linear.push(one);
+      times.push(other);
+    }
+    return {
+      what: `network of 1,012 channels, ${kind}`,
+      median: median(times),
+      unit: 'ms',
+      runs: times.length,
+      against: `one linear solve, values only (${median(linear).toPrecision(3)} ms)`,
+      ratio: median(times) / median(linear),
+      target: 10,
+    };
+  });
+}
+
 export default async function bench(): Promise<BenchRow[]> {
   const python = await Python.start('networks.py');
   const rows = [
@@ -68,6 +106,7 @@ export default async function bench(): Promise<BenchRow[]> {
     ...(await compared('tree of 1e5 channels', treeNetwork(100_001), python, 'tree 100001', [1])),
   ];
   python?.stop();
+  rows.push(...nonlinear());
   const [ms, mb] = execFileSync(process.execPath, [join(import.meta.dirname, 'native', 'million.ts')], {
     encoding: 'utf8',
   })
