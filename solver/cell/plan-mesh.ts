@@ -1,5 +1,6 @@
 import type { Edge, Mesh } from '../mesh/mesh.ts';
 import { meshShape } from '../mesh/mesh-shape.ts';
+import { faceWidths } from './equivalent.ts';
 import { type CellShape, sharpCorners } from './shape.ts';
 
 /**
@@ -13,7 +14,7 @@ export function planMesh(shape: CellShape, coarseness: number, where: string, ma
   const outer = loops[0];
   let extent = 0;
   for (const edge of outer) extent = Math.max(extent, Math.hypot(edge.x - outer[0].x, edge.y - outer[0].y));
-  const width = narrowest(shape);
+  const width = Math.min(...faceWidths(shape));
   // Wall layers are a share depth / width of the whole: where that is small they may be coarser.
   const wall = 0.75 * coarseness * Math.max(1, width / 5) ** 0.25;
   return meshShape(
@@ -33,19 +34,6 @@ export function planMesh(shape: CellShape, coarseness: number, where: string, ma
     },
     where,
   );
-}
-
-/** Length of the shortest face. */
-export function narrowest(shape: CellShape): number {
-  const length = new Float64Array(shape.faces + 1);
-  for (const loop of shape.loops)
-    loop.forEach((edge, i) => {
-      const next = loop[(i + 1) % loop.length];
-      if (edge.tag > 0) length[edge.tag] += Math.hypot(next.x - edge.x, next.y - edge.y);
-    });
-  let least = Number.POSITIVE_INFINITY;
-  for (let face = 1; face <= shape.faces; face += 1) least = Math.min(least, length[face]);
-  return least;
 }
 
 /** Distance from a corner to the nearest edge that does not start or end there. */

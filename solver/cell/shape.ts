@@ -1,4 +1,4 @@
-import type { Shape } from '../mesh/mesh.ts';
+import type { Edge, Shape } from '../mesh/mesh.ts';
 import type { Profile } from '../section/profile.ts';
 
 /**
@@ -27,21 +27,14 @@ export interface CellShape {
 /** Half of the least turn to the right (fluid angle above 180 degrees) that counts as a sharp corner, as a sine: 0.2 degrees of turn. */
 const SHARP = Math.sin((0.1 * Math.PI) / 180);
 
-/** Unit tangent at an edge's start (end = false) or end. The chord is turned by half the sweep. */
-function tangent(
-  x0: number,
-  y0: number,
-  x1: number,
-  y1: number,
-  bulge: number,
-  end: boolean,
-): [number, number] {
-  const length = Math.hypot(x1 - x0, y1 - y0);
-  const half = 2 * Math.atan(bulge) * (end ? 1 : -1);
+/** Unit tangent at an edge's start or end: its chord turned by half the sweep. */
+export function edgeTangent(edge: Edge, next: Edge, end: boolean): [number, number] {
+  const length = Math.hypot(next.x - edge.x, next.y - edge.y);
+  const half = 2 * Math.atan(edge.bulge) * (end ? 1 : -1);
   const c = Math.cos(half);
   const s = Math.sin(half);
-  const dx = (x1 - x0) / length;
-  const dy = (y1 - y0) / length;
+  const dx = (next.x - edge.x) / length;
+  const dy = (next.y - edge.y) / length;
   return [dx * c - dy * s, dx * s + dy * c];
 }
 
@@ -59,8 +52,8 @@ export function sharpCorners(loops: Shape): [number, number, number][] {
       const here = loop[i]!;
       const next = loop[(i + 1) % n]!;
       if (before.tag !== 0 || here.tag !== 0) continue;
-      const a = tangent(before.x, before.y, here.x, here.y, before.bulge, true);
-      const b = tangent(here.x, here.y, next.x, next.y, here.bulge, false);
+      const a = edgeTangent(before, here, true);
+      const b = edgeTangent(here, next, false);
       const turn = Math.atan2(a[0] * b[1] - a[1] * b[0], a[0] * b[0] + a[1] * b[1]);
       if (Math.sin(turn / 2) < -SHARP) found.push([here.x, here.y, Math.PI - turn]);
     }

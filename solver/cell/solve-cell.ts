@@ -1,7 +1,7 @@
 import { canonical } from './canonical.ts';
 import { type Accuracy, type CellSolution, DEFAULT_ACCURACY, type ShapeSolution } from './cell.ts';
 import { checkCell } from './check-cell.ts';
-import { equivalentDepth } from './equivalent-depth.ts';
+import { equivalent } from './equivalent.ts';
 import type { CellShape } from './shape.ts';
 import { solveShape } from './solve-shape.ts';
 import { type CellStore, serves } from './store.ts';
@@ -20,8 +20,8 @@ export function solveCell(
   where = '',
 ): CellSolution {
   checkCell(shape, where);
-  const equivalent = equivalentDepth(shape, where);
-  const copy = canonical({ ...shape, depth: equivalent.depth, profile: { kind: 'rectangle' } });
+  const { shape: extruded, error: profileError } = equivalent(shape, where);
+  const copy = canonical(extruded);
   const key = `${CELL_VERSION} ${copy.key}`;
   let solved: ShapeSolution | undefined = store?.get(key);
   if (!solved || !serves(solved, accuracy)) {
@@ -42,10 +42,11 @@ export function solveCell(
     faces,
     key,
     portMatrix,
-    flowError: solved.flowError + equivalent.error,
-    peakError: solved.peakError,
-    profileError: equivalent.error,
-    depth: equivalent.depth,
+    flowError: solved.flowError + profileError,
+    // The rectangle that stands in has other side walls: its peaks say nothing.
+    peakError: profileError > 0 ? null : solved.peakError,
+    profileError,
+    depth: extruded.depth,
     sharp: solved.sharp,
     checks: solved.checks,
     fields: solved.fields,
@@ -56,6 +57,5 @@ export function solveCell(
 /** The key under which a shape's solution is kept. */
 export function cellKey(shape: CellShape, where = ''): string {
   checkCell(shape, where);
-  const { depth } = equivalentDepth(shape, where);
-  return `${CELL_VERSION} ${canonical({ ...shape, depth, profile: { kind: 'rectangle' } }).key}`;
+  return `${CELL_VERSION} ${canonical(equivalent(shape, where).shape).key}`;
 }

@@ -1,10 +1,11 @@
 import { Problem } from '../problem/problem.ts';
 import type { Accuracy, CellFields, ShapeSolution } from './cell.ts';
 import { relativeDifference } from './difference.ts';
+import { faceWidths } from './equivalent.ts';
 import { fieldsOf, type Level, type LevelSolution, levelOf, solveLevel } from './level.ts';
 import { mostTriangles } from './memory.ts';
 import { peakOfFields } from './peak.ts';
-import { narrowest, planMesh } from './plan-mesh.ts';
+import { planMesh } from './plan-mesh.ts';
 import { type CellShape, sharpCorners } from './shape.ts';
 
 /** Of the pressure iteration: where the result is kept, and where only errors are judged by it. */
@@ -24,7 +25,7 @@ export function solveShape(shape: CellShape, accuracy: Accuracy, where: string):
   const { faces } = shape;
   const sharp = sharpCorners(shape.loops).length > 0;
   const wantPeak = accuracy.peak !== null && !sharp;
-  const slender = 1 / narrowest(shape);
+  const slender = 1 / Math.min(...faceWidths(shape));
   let modes = Math.max(wantPeak ? peakModes(accuracy.peak as number) : 1, flowModes(accuracy.flow, slender));
   let coarseness = Math.min(1.4, Math.max(FINEST, (accuracy.flow / 0.005) ** (1 / 3.5)));
   if (wantPeak)
