@@ -42,8 +42,8 @@ export function cutBoundary(shape: Shape, sizing: FullSizing, extra: readonly Ed
   for (const loop of shape) {
     const base = curves.length;
     for (let i = 0; i < loop.length; i += 1) {
-      const a = loop[i]!;
-      const b = loop[(i + 1) % loop.length]!;
+      const a = loop[i];
+      const b = loop[(i + 1) % loop.length];
       const curve = curveOf(a.x, a.y, b.x, b.y, a.bulge);
       const e = base + i;
       previous[e] = base + ((i + loop.length - 1) % loop.length);
@@ -61,28 +61,28 @@ export function cutBoundary(shape: Shape, sizing: FullSizing, extra: readonly Ed
   const corner = corners(curves, previous, size);
   const vertexSize = vertexSizes(curves, previous, following, size, wishes, corner, sizing.growth);
   const wishesOf: EdgeWish[][] = curves.map(() => []);
-  for (const wish of wishes) wishesOf[wish.edge]!.push(wish);
+  for (const wish of wishes) wishesOf[wish.edge].push(wish);
 
   const pieces: { edge: number; from: number; to: number; size: number }[] = [];
   const first = new Int32Array(total);
   const point = [0, 0];
   for (let e = 0; e < total; e += 1) {
-    const curve = curves[e]!;
-    const f = following[e]!;
-    const wished = wishesOf[e]!;
-    const tip0 = corner.tip[e]!;
-    const tip1 = corner.tip[f]!;
+    const curve = curves[e];
+    const f = following[e];
+    const wished = wishesOf[e];
+    const tip0 = corner.tip[e];
+    const tip1 = corner.tip[f];
     const wanted = (t: number): number => {
       const d0 = t * curve.length;
       const d1 = curve.length - d0;
-      let s = size[e]!;
+      let s = size[e];
       s = Math.min(
         s,
-        tip0 ? cone(corner.cone[e]!, tip0, d0, sizing.growth) : vertexSize[e]! + sizing.growth * d0,
+        tip0 ? cone(corner.cone[e], tip0, d0, sizing.growth) : vertexSize[e] + sizing.growth * d0,
       );
       s = Math.min(
         s,
-        tip1 ? cone(corner.cone[f]!, tip1, d1, sizing.growth) : vertexSize[f]! + sizing.growth * d1,
+        tip1 ? cone(corner.cone[f], tip1, d1, sizing.growth) : vertexSize[f] + sizing.growth * d1,
       );
       for (const wish of wished) {
         s = Math.min(s, wish.size + sizing.growth * Math.abs(t - wish.t) * curve.length);
@@ -90,7 +90,7 @@ export function cutBoundary(shape: Shape, sizing: FullSizing, extra: readonly Ed
       if (sizing.points.length > 0) {
         pointAt(curve, t, point);
         for (const at of sizing.points) {
-          s = Math.min(s, at.size + at.growth * Math.hypot(point[0]! - at.x, point[1]! - at.y));
+          s = Math.min(s, at.size + at.growth * Math.hypot(point[0] - at.x, point[1] - at.y));
         }
       }
       return s;
@@ -102,7 +102,7 @@ export function cutBoundary(shape: Shape, sizing: FullSizing, extra: readonly Ed
     if (tip0) shares.unshift(0);
     if (tip1) shares.push(1);
     for (let k = 0; k + 1 < shares.length; k += 1) {
-      pieces.push({ edge: e, from: shares[k]!, to: shares[k + 1]!, size: wanted(shares[k]!) });
+      pieces.push({ edge: e, from: shares[k], to: shares[k + 1], size: wanted(shares[k]) });
     }
     if (pieces.length > sizing.maxTriangles) throw tooFine(sizing.maxTriangles);
   }
@@ -127,8 +127,8 @@ function corners(curves: readonly Curve[], previous: Int32Array, size: Float64Ar
   const tip = new Float64Array(curves.length);
   const slope = new Float64Array(curves.length);
   for (let e = 0; e < curves.length; e += 1) {
-    const before = curves[previous[e]!]!;
-    const after = curves[e]!;
+    const before = curves[previous[e]];
+    const after = curves[e];
     const turn = directionAt(after, 0) - directionAt(before, 1);
     const inside = Math.PI - Math.atan2(Math.sin(turn), Math.cos(turn));
     if (inside >= SHARP) continue;
@@ -143,7 +143,7 @@ function corners(curves: readonly Curve[], previous: Int32Array, size: Float64Ar
     slope[e] = 2 * Math.tan(inside / 2);
     tip[e] = Math.min(
       TIP_SHARE * Math.min(before.length, after.length),
-      1.2 * Math.min(size[e]!, size[previous[e]!]!),
+      1.2 * Math.min(size[e], size[previous[e]]),
     );
   }
   return { tip, cone: slope };
@@ -162,23 +162,23 @@ function vertexSizes(
   const count = curves.length;
   const at = new Float64Array(count);
   for (let e = 0; e < count; e += 1) {
-    const p = previous[e]!;
-    at[e] = Math.min(size[e]!, size[p]!, curves[e]!.length, curves[p]!.length);
+    const p = previous[e];
+    at[e] = Math.min(size[e], size[p], curves[e].length, curves[p].length);
     // A sharp corner passes its width on, at the end of its tip.
-    if (corner.tip[e]! > 0) at[e] = Math.min(at[e]!, corner.cone[e]! * corner.tip[e]!);
+    if (corner.tip[e] > 0) at[e] = Math.min(at[e], corner.cone[e] * corner.tip[e]);
   }
   for (const { edge, t, size: wish } of wishes) {
-    const f = following[edge]!;
-    at[edge] = Math.min(at[edge]!, wish + growth * t * curves[edge]!.length);
-    at[f] = Math.min(at[f]!, wish + growth * (1 - t) * curves[edge]!.length);
+    const f = following[edge];
+    at[edge] = Math.min(at[edge], wish + growth * t * curves[edge].length);
+    at[f] = Math.min(at[f], wish + growth * (1 - t) * curves[edge].length);
   }
   for (let pass = 0; pass < 2; pass += 1) {
     for (let e = 0; e < count; e += 1) {
-      const f = following[e]!;
-      at[f] = Math.min(at[f]!, at[e]! + growth * curves[e]!.length);
+      const f = following[e];
+      at[f] = Math.min(at[f], at[e] + growth * curves[e].length);
     }
     for (let e = count - 1; e >= 0; e -= 1) {
-      at[e] = Math.min(at[e]!, at[following[e]!]! + growth * curves[e]!.length);
+      at[e] = Math.min(at[e], at[following[e]] + growth * curves[e].length);
     }
   }
   return at;
@@ -207,10 +207,10 @@ function spread(wanted: (t: number) => number, start: number, end: number, lengt
   let k = 0;
   for (let i = 1; i < n; i += 1) {
     const goal = (sum * i) / n;
-    while (sums[k]! < goal) k += 1;
-    const low = k === 0 ? 0 : sums[k - 1]!;
-    const a = k === 0 ? start : ends[k - 1]!;
-    shares.push(a + ((ends[k]! - a) * (goal - low)) / (sums[k]! - low));
+    while (sums[k] < goal) k += 1;
+    const low = k === 0 ? 0 : sums[k - 1];
+    const a = k === 0 ? start : ends[k - 1];
+    shares.push(a + ((ends[k] - a) * (goal - low)) / (sums[k] - low));
   }
   shares.push(end);
   return shares;
@@ -242,29 +242,29 @@ function assemble(
   };
   const point = [0, 0];
   for (let i = 0; i < count; i += 1) {
-    const piece = pieces[i]!;
-    pointAt(curves[piece.edge]!, piece.from, point);
-    boundary.x[i] = point[0]!;
-    boundary.y[i] = point[1]!;
+    const piece = pieces[i];
+    pointAt(curves[piece.edge], piece.from, point);
+    boundary.x[i] = point[0];
+    boundary.y[i] = point[1];
     boundary.edge[i] = piece.edge;
     boundary.from[i] = piece.from;
     boundary.to[i] = piece.to;
-    const last = i + 1 === count || pieces[i + 1]!.edge !== piece.edge;
-    boundary.next[i] = last ? first[following[piece.edge]!]! : i + 1;
-    if (piece.from === 0 && tip[piece.edge]! > 0) boundary.sharp[i] = 1;
+    const last = i + 1 === count || pieces[i + 1].edge !== piece.edge;
+    boundary.next[i] = last ? first[following[piece.edge]] : i + 1;
+    if (piece.from === 0 && tip[piece.edge] > 0) boundary.sharp[i] = 1;
   }
-  for (let i = 0; i < count; i += 1) boundary.previous[boundary.next[i]!] = i;
+  for (let i = 0; i < count; i += 1) boundary.previous[boundary.next[i]] = i;
   const pieceLength = (i: number): number => {
-    const j = boundary.next[i]!;
-    return Math.hypot(boundary.x[j]! - boundary.x[i]!, boundary.y[j]! - boundary.y[i]!);
+    const j = boundary.next[i];
+    return Math.hypot(boundary.x[j] - boundary.x[i], boundary.y[j] - boundary.y[i]);
   };
   for (let i = 0; i < count; i += 1) {
     // What the pieces really are; a tip piece is long on purpose.
-    const before = boundary.previous[i]!;
+    const before = boundary.previous[i];
     const a = boundary.sharp[before] ? Number.POSITIVE_INFINITY : pieceLength(before);
-    const b = boundary.sharp[boundary.next[i]!] ? Number.POSITIVE_INFINITY : pieceLength(i);
+    const b = boundary.sharp[boundary.next[i]] ? Number.POSITIVE_INFINITY : pieceLength(i);
     const real = Number.isFinite(a) && Number.isFinite(b) ? (a + b) / 2 : Math.min(a, b);
-    boundary.size[i] = boundary.sharp[i] || !Number.isFinite(real) ? pieces[i]!.size : real;
+    boundary.size[i] = boundary.sharp[i] || !Number.isFinite(real) ? pieces[i].size : real;
   }
   return boundary;
 }

@@ -42,8 +42,8 @@ export function checkShape(shape: Shape, where: string): Shape {
 function merged(loop: readonly Edge[], least: number): Edge[] {
   const kept: Edge[] = [];
   for (let i = 0; i < loop.length; i += 1) {
-    const here = loop[i]!;
-    const next = loop[(i + 1) % loop.length]!;
+    const here = loop[i];
+    const next = loop[(i + 1) % loop.length];
     if (Math.hypot(next.x - here.x, next.y - here.y) > least) kept.push(here);
   }
   return kept;
@@ -51,11 +51,11 @@ function merged(loop: readonly Edge[], least: number): Edge[] {
 
 /** Twice the signed area, arcs included. */
 export function twiceArea(loop: readonly Edge[]): number {
-  const { x: ox, y: oy } = loop[0]!;
+  const { x: ox, y: oy } = loop[0];
   let sum = 0;
   for (let i = 0; i < loop.length; i += 1) {
-    const a = loop[i]!;
-    const b = loop[(i + 1) % loop.length]!;
+    const a = loop[i];
+    const b = loop[(i + 1) % loop.length];
     sum += (a.x - ox) * (b.y - oy) - (b.x - ox) * (a.y - oy);
     sum += twiceSegmentArea(curveOf(a.x, a.y, b.x, b.y, a.bulge));
   }
@@ -65,8 +65,8 @@ export function twiceArea(loop: readonly Edge[]): number {
 function reversed(loop: readonly Edge[]): Edge[] {
   const n = loop.length;
   return loop.map((_, k) => {
-    const start = loop[(n - k) % n]!;
-    const edge = loop[(2 * n - 1 - k) % n]!;
+    const start = loop[(n - k) % n];
+    const edge = loop[(2 * n - 1 - k) % n];
     return { x: start.x, y: start.y, bulge: -edge.bulge, tag: edge.tag };
   });
 }

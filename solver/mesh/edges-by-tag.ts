@@ -20,9 +20,9 @@ export function nodesByTag(mesh: Mesh, tag: number): number[] {
   for (let i = 0; i < mesh.boundaryTag.length; i += 1) {
     if (mesh.boundaryTag[i] !== tag) continue;
     nodes
-      .add(mesh.boundary[3 * i]!)
-      .add(mesh.boundary[3 * i + 2]!)
-      .add(mesh.boundary[3 * i + 1]!);
+      .add(mesh.boundary[3 * i])
+      .add(mesh.boundary[3 * i + 2])
+      .add(mesh.boundary[3 * i + 1]);
   }
   return [...nodes];
 }

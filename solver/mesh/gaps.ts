@@ -36,27 +36,27 @@ export function gapWishes(
   const look = (other: number): void => {
     if (other === edge || previous[other] === edge || previous[edge] === other) return;
     // A vertex lies on the edge before as well.
-    if (share === 0 && previous[previous[edge]!] === other) return;
-    const curve = curves[other]!;
-    const t = nearestShare(curve, p[0]!, p[1]!);
+    if (share === 0 && previous[previous[edge]] === other) return;
+    const curve = curves[other];
+    const t = nearestShare(curve, p[0], p[1]);
     pointAt(curve, t, q);
-    const dx = q[0]! - p[0]!;
-    const dy = q[1]! - p[1]!;
+    const dx = q[0] - p[0];
+    const dy = q[1] - p[1];
     const gap = Math.hypot(dx, dy);
     if (gap > reach || gap === 0) return;
     const facing = (nx * dx + ny * dy) / gap;
     if (facing < FACING) return;
-    if (gap / facing < across * size[edge]!) wishes.push({ edge, t: share, size: gap / facing / across });
+    if (gap / facing < across * size[edge]) wishes.push({ edge, t: share, size: gap / facing / across });
     if (t === 0 || t === 1) return;
     const back = directionAt(curve, t);
     if ((Math.sin(back) * dx - Math.cos(back) * dy) / gap < FACING) return;
-    if (gap < across * size[other]!) wishes.push({ edge: other, t, size: gap / across });
+    if (gap < across * size[other]) wishes.push({ edge: other, t, size: gap / across });
   };
 
   for (edge = 0; edge < count; edge += 1) {
-    const curve = curves[edge]!;
-    const before = curves[previous[edge]!]!;
-    const samples = grid ? 1 : Math.min(8, Math.max(1, Math.round(curve.length / (2 * size[edge]!))));
+    const curve = curves[edge];
+    const before = curves[previous[edge]];
+    const samples = grid ? 1 : Math.min(8, Math.max(1, Math.round(curve.length / (2 * size[edge]))));
     for (let k = 0; k <= samples; k += 1) {
       share = k === 0 ? 0 : (k - 0.5) / samples;
       pointAt(curve, share, p);
@@ -68,8 +68,8 @@ export function gapWishes(
       }
       nx = -Math.sin(direction);
       ny = Math.cos(direction);
-      reach = across * (grid ? size[edge]! : largest);
-      if (grid) grid.near(p[0]! - reach, p[1]! - reach, p[0]! + reach, p[1]! + reach, look);
+      reach = across * (grid ? size[edge] : largest);
+      if (grid) grid.near(p[0] - reach, p[1] - reach, p[0] + reach, p[1] + reach, look);
       else for (let other = 0; other < count; other += 1) look(other);
     }
   }

@@ -16,11 +16,11 @@ export class Grid {
     const count = boxes.length / 4;
     let [x0, y0, x1, y1, extent] = [Infinity, Infinity, -Infinity, -Infinity, 0];
     for (let i = 0; i < count; i += 1) {
-      x0 = Math.min(x0, boxes[4 * i]!);
-      y0 = Math.min(y0, boxes[4 * i + 1]!);
-      x1 = Math.max(x1, boxes[4 * i + 2]!);
-      y1 = Math.max(y1, boxes[4 * i + 3]!);
-      extent += Math.max(boxes[4 * i + 2]! - boxes[4 * i]!, boxes[4 * i + 3]! - boxes[4 * i + 1]!);
+      x0 = Math.min(x0, boxes[4 * i]);
+      y0 = Math.min(y0, boxes[4 * i + 1]);
+      x1 = Math.max(x1, boxes[4 * i + 2]);
+      y1 = Math.max(y1, boxes[4 * i + 3]);
+      extent += Math.max(boxes[4 * i + 2] - boxes[4 * i], boxes[4 * i + 3] - boxes[4 * i + 1]);
     }
     // About one bucket per item, never smaller than the mean item.
     const span = Math.max(x1 - x0, y1 - y0) || 1;
@@ -31,23 +31,23 @@ export class Grid {
     this.rows = Math.floor((y1 - y0) / this.cell) + 1;
     this.start = new Int32Array(this.columns * this.rows + 1);
     this.seen = new Int32Array(count);
-    for (let i = 0; i < count; i += 1) this.each(boxes, i, (b) => (this.start[b + 1]! += 1));
-    for (let b = 0; b < this.columns * this.rows; b += 1) this.start[b + 1]! += this.start[b]!;
-    this.items = new Int32Array(this.start[this.columns * this.rows]!);
+    for (let i = 0; i < count; i += 1) this.each(boxes, i, (b) => (this.start[b + 1] += 1));
+    for (let b = 0; b < this.columns * this.rows; b += 1) this.start[b + 1] += this.start[b];
+    this.items = new Int32Array(this.start[this.columns * this.rows]);
     const next = this.start.slice();
     for (let i = 0; i < count; i += 1) {
       this.each(boxes, i, (b) => {
-        this.items[next[b]!] = i;
-        next[b]! += 1;
+        this.items[next[b]] = i;
+        next[b] += 1;
       });
     }
   }
 
   private each(boxes: Float64Array, i: number, visit: (bucket: number) => void): void {
-    const c1 = this.column(boxes[4 * i + 2]!);
-    const r1 = this.row(boxes[4 * i + 3]!);
-    for (let r = this.row(boxes[4 * i + 1]!); r <= r1; r += 1) {
-      for (let c = this.column(boxes[4 * i]!); c <= c1; c += 1) visit(r * this.columns + c);
+    const c1 = this.column(boxes[4 * i + 2]);
+    const r1 = this.row(boxes[4 * i + 3]);
+    for (let r = this.row(boxes[4 * i + 1]); r <= r1; r += 1) {
+      for (let c = this.column(boxes[4 * i]); c <= c1; c += 1) visit(r * this.columns + c);
     }
   }
 
@@ -67,8 +67,8 @@ export class Grid {
     for (let r = this.row(y0); r <= r1; r += 1) {
       for (let c = this.column(x0); c <= c1; c += 1) {
         const b = r * this.columns + c;
-        for (let k = this.start[b]!; k < this.start[b + 1]!; k += 1) {
-          const item = this.items[k]!;
+        for (let k = this.start[b]; k < this.start[b + 1]; k += 1) {
+          const item = this.items[k];
           if (this.seen[item] === this.stamp) continue;
           this.seen[item] = this.stamp;
           visit(item);

@@ -42,15 +42,15 @@ export class Inserter {
       for (let i = 0; i < 3; i += 1) {
         const e = 3 * t + i;
         if (e === came) continue;
-        const a = vertex[e]!;
-        const b = vertex[i === 2 ? e - 2 : e + 1]!;
-        if ((x[b]! - x[a]!) * (py - y[a]!) - (y[b]! - y[a]!) * (px - x[a]!) < 0) {
+        const a = vertex[e];
+        const b = vertex[i === 2 ? e - 2 : e + 1];
+        if ((x[b] - x[a]) * (py - y[a]) - (y[b] - y[a]) * (px - x[a]) < 0) {
           onward = e;
           break;
         }
       }
       if (onward === -1) return t;
-      came = twin[onward]!;
+      came = twin[onward];
       if (came < 0) {
         this.blockedBy = -1 - came;
         return -1;
@@ -69,13 +69,13 @@ export class Inserter {
     const { x, y, vertex } = mesh;
     const clear2 = clearance * clearance;
     for (let k = 0; k < count; k += 1) {
-      const e = this.rim[k]!;
-      const a = vertex[e]!;
-      const b = vertex[e % 3 === 2 ? e - 2 : e + 1]!;
-      const dx = x[a]! - px;
-      const dy = y[a]! - py;
+      const e = this.rim[k];
+      const a = vertex[e];
+      const b = vertex[e % 3 === 2 ? e - 2 : e + 1];
+      const dx = x[a] - px;
+      const dy = y[a] - py;
       if (dx * dx + dy * dy < clear2) return REFUSED;
-      const area = dx * (y[b]! - py) - dy * (x[b]! - px);
+      const area = dx * (y[b] - py) - dy * (x[b] - px);
       if (!(area > 1e-14 * clear2)) return REFUSED;
     }
     this.star(count, mesh.addVertex(px, py, size));
@@ -95,16 +95,16 @@ export class Inserter {
     cavity[0] = t;
     mark[t] = stamp;
     for (let k = 0; k < count; k += 1) {
-      const base = 3 * cavity[k]!;
+      const base = 3 * cavity[k];
       for (let e = base; e < base + 3; e += 1) {
-        const f = twin[e]!;
+        const f = twin[e];
         if (f < 0) {
-          const a = vertex[e]!;
-          const b = vertex[e % 3 === 2 ? e - 2 : e + 1]!;
-          const ax = x[a]! - px;
-          const ay = y[a]! - py;
-          const bx = x[b]! - px;
-          const by = y[b]! - py;
+          const a = vertex[e];
+          const b = vertex[e % 3 === 2 ? e - 2 : e + 1];
+          const ax = x[a] - px;
+          const ay = y[a] - py;
+          const bx = x[b] - px;
+          const by = y[b] - py;
           const dot = ax * bx + ay * by;
           if (dot < 0 && dot < ENCROACHING * Math.sqrt((ax * ax + ay * ay) * (bx * bx + by * by))) {
             this.blockedBy = -1 - f;
@@ -127,9 +127,9 @@ export class Inserter {
     }
     if (this.rim.length < count + 2) this.rim = enlarged(this.rim, 2 * count + 2);
     for (let k = 0; k < count; k += 1) {
-      const base = 3 * cavity[k]!;
+      const base = 3 * cavity[k];
       for (let e = base; e < base + 3; e += 1) {
-        const f = twin[e]!;
+        const f = twin[e];
         if (f >= 0 && mark[Math.floor(f / 3)] === stamp) continue;
         // A rim longer than cavity + 2 is no single ring: no star.
         if (rims === count + 2) return 0;
@@ -154,24 +154,24 @@ export class Inserter {
     }
     const { from, to, out } = this;
     for (let k = 0; k < rims; k += 1) {
-      const e = rim[k]!;
-      from[k] = vertex[e]!;
-      to[k] = vertex[e % 3 === 2 ? e - 2 : e + 1]!;
-      out[k] = twin[e]!;
+      const e = rim[k];
+      from[k] = vertex[e];
+      to[k] = vertex[e % 3 === 2 ? e - 2 : e + 1];
+      out[k] = twin[e];
     }
     for (let k = 0; k < rims; k += 1) {
-      const t = k < rims - 2 ? cavity[k]! : mesh.triangleCount + (k - rims + 2);
+      const t = k < rims - 2 ? cavity[k] : mesh.triangleCount + (k - rims + 2);
       made[k] = t;
-      startAt[from[k]!] = t;
-      vertex[3 * t] = from[k]!;
-      vertex[3 * t + 1] = to[k]!;
+      startAt[from[k]] = t;
+      vertex[3 * t] = from[k];
+      vertex[3 * t + 1] = to[k];
       vertex[3 * t + 2] = v;
-      twin[3 * t] = out[k]!;
-      if (out[k]! >= 0) twin[out[k]!] = 3 * t;
+      twin[3 * t] = out[k];
+      if (out[k] >= 0) twin[out[k]] = 3 * t;
     }
     for (let k = 0; k < rims; k += 1) {
-      const t = made[k]!;
-      const onward = startAt[to[k]!]!;
+      const t = made[k];
+      const onward = startAt[to[k]];
       twin[3 * t + 1] = 3 * onward + 2;
       twin[3 * onward + 2] = 3 * t + 1;
     }
@@ -195,15 +195,15 @@ export function inCircle(
   px: number,
   py: number,
 ): boolean {
-  const a = vertex[base]!;
-  const b = vertex[base + 1]!;
-  const c = vertex[base + 2]!;
-  const ax = x[a]! - px;
-  const ay = y[a]! - py;
-  const bx = x[b]! - px;
-  const by = y[b]! - py;
-  const cx = x[c]! - px;
-  const cy = y[c]! - py;
+  const a = vertex[base];
+  const b = vertex[base + 1];
+  const c = vertex[base + 2];
+  const ax = x[a] - px;
+  const ay = y[a] - py;
+  const bx = x[b] - px;
+  const by = y[b] - py;
+  const cx = x[c] - px;
+  const cy = y[c] - py;
   const a2 = ax * ax + ay * ay;
   const b2 = bx * bx + by * by;
   const c2 = cx * cx + cy * cy;

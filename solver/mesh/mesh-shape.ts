@@ -52,9 +52,9 @@ export function meshShape(shape: Shape, sizing: Sizing, where = ''): Mesh {
     let corner = 0;
     for (const loop of pose.vertexOf) {
       for (const [l, v] of loop) {
-        const node = vertexNode[boundary.first[corner]!]!;
-        mesh.x[node] = checked[l]![v]!.x;
-        mesh.y[node] = checked[l]![v]!.y;
+        const node = vertexNode[boundary.first[corner]];
+        mesh.x[node] = checked[l][v].x;
+        mesh.y[node] = checked[l][v].y;
         corner += 1;
       }
     }
@@ -75,20 +75,20 @@ function piecesToCut(
     if (!isBad(triangulation, t)) continue;
     bad += 1;
     for (let e = 3 * t; e < 3 * t + 3; e += 1) {
-      if (twin[e]! < 0) cuts.add(-1 - twin[e]!);
-      else if (vertex[e]! < boundaryCount) blocking.has(vertex[e]!) && cuts.add(vertex[e]!);
+      if (twin[e] < 0) cuts.add(-1 - twin[e]);
+      else if (vertex[e] < boundaryCount) blocking.has(vertex[e]) && cuts.add(vertex[e]);
     }
   }
   if (bad > 0) for (const piece of blocking) cuts.add(piece);
   // A curved triangle that bends too far: its arc piece is cut.
   const piece = new Map<number, number>();
   for (let i = 0; i < boundary.count; i += 1) {
-    if (boundary.curves[boundary.edge[i]!]!.sweep !== 0) piece.set(mesh.boundary[3 * i + 2]!, i);
+    if (boundary.curves[boundary.edge[i]].sweep !== 0) piece.set(mesh.boundary[3 * i + 2], i);
   }
   if (piece.size > 0) {
     for (let t = 0; t < mesh.triangles.length; t += 6) {
       for (let i = 3; i < 6; i += 1) {
-        const found = piece.get(mesh.triangles[t + i]!);
+        const found = piece.get(mesh.triangles[t + i]);
         if (found !== undefined && leastJacobian(mesh, t) < LEAST_JACOBIAN) cuts.add(found);
       }
     }
@@ -97,10 +97,10 @@ function piecesToCut(
 }
 
 function halved(boundary: Boundary, piece: number): EdgeWish {
-  const edge = boundary.edge[piece]!;
-  const from = boundary.from[piece]!;
-  const to = boundary.to[piece]!;
-  return { edge, t: (from + to) / 2, size: 0.55 * (to - from) * boundary.curves[edge]!.length };
+  const edge = boundary.edge[piece];
+  const from = boundary.from[piece];
+  const to = boundary.to[piece];
+  return { edge, t: (from + to) / 2, size: 0.55 * (to - from) * boundary.curves[edge].length };
 }
 
 function crossing(
@@ -116,7 +116,7 @@ function crossing(
   const x = Float64Array.of(place[0]);
   const y = Float64Array.of(place[1]);
   back(x, y, 1);
-  const at = `(${x[0]!.toPrecision(6)}, ${y[0]!.toPrecision(6)})`;
+  const at = `(${x[0].toPrecision(6)}, ${y[0].toPrecision(6)})`;
   return new Problem('shape', `The outline crosses or touches itself at ${at}.`, where, remedy);
 }
 

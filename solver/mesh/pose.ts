@@ -35,7 +35,7 @@ function rounded(value: number): number {
 }
 
 export function canonicalPose(shape: Shape, sizing: FullSizing): Pose {
-  const outer = shape[0]!;
+  const outer = shape[0];
   let total = 0;
   for (let i = 0; i < outer.length; i += 1) total += chord(outer, i);
   const scale = 1 / total;
@@ -75,8 +75,8 @@ export function canonicalPose(shape: Shape, sizing: FullSizing): Pose {
     back(x, y, count) {
       const { cos, sin, x0, y0 } = frame;
       for (let i = 0; i < count; i += 1) {
-        const u = x[i]! * total;
-        const v = (mirrored ? -y[i]! : y[i]!) * total;
+        const u = x[i] * total;
+        const v = (mirrored ? -y[i] : y[i]) * total;
         x[i] = x0 + cos * u - sin * v;
         y[i] = y0 + sin * u + cos * v;
       }
@@ -85,8 +85,8 @@ export function canonicalPose(shape: Shape, sizing: FullSizing): Pose {
 }
 
 function chord(loop: readonly Edge[], i: number): number {
-  const a = loop[i]!;
-  const b = loop[(i + 1) % loop.length]!;
+  const a = loop[i];
+  const b = loop[(i + 1) % loop.length];
   return Math.hypot(b.x - a.x, b.y - a.y);
 }
 
@@ -96,9 +96,9 @@ function cyclicWords(loop: readonly Edge[], scale: number, wanted: (edge: Edge) 
   const edges: number[][] = [];
   const turns: number[] = [];
   for (let i = 0; i < n; i += 1) {
-    const before = loop[(i + n - 1) % n]!;
-    const here = loop[i]!;
-    const after = loop[(i + 1) % n]!;
+    const before = loop[(i + n - 1) % n];
+    const here = loop[i];
+    const after = loop[(i + 1) % n];
     const ux = here.x - before.x;
     const uy = here.y - before.y;
     const vx = after.x - here.x;
@@ -113,8 +113,8 @@ function cyclicWords(loop: readonly Edge[], scale: number, wanted: (edge: Edge) 
     ]);
   }
   const letters: number[][] = [];
-  for (let i = 0; i < n; i += 1) letters.push([...edges[i]!, turns[(i + 1) % n]!]);
-  for (let i = n - 1; i >= 0; i -= 1) letters.push([...edges[i]!, turns[i]!]);
+  for (let i = 0; i < n; i += 1) letters.push([...edges[i], turns[(i + 1) % n]]);
+  for (let i = n - 1; i >= 0; i -= 1) letters.push([...edges[i], turns[i]]);
   const rank = new Map<string, number>();
   for (const letter of [...letters].sort(compareLists)) {
     const name = letter.join(' ');
@@ -126,7 +126,7 @@ function cyclicWords(loop: readonly Edge[], scale: number, wanted: (edge: Edge) 
 
 function compareLists(a: readonly number[], b: readonly number[]): number {
   for (let i = 0; i < a.length && i < b.length; i += 1) {
-    if (a[i] !== b[i]) return a[i]! - b[i]!;
+    if (a[i] !== b[i]) return a[i] - b[i];
   }
   return a.length - b.length;
 }
@@ -138,8 +138,8 @@ function leastRotation(word: readonly number[]): number {
   let j = 1;
   let k = 0;
   while (i < n && j < n && k < n) {
-    const a = word[(i + k) % n]!;
-    const b = word[(j + k) % n]!;
+    const a = word[(i + k) % n];
+    const b = word[(j + k) % n];
     if (a === b) {
       k += 1;
       continue;
@@ -155,7 +155,7 @@ function leastRotation(word: readonly number[]): number {
 function compareCyclic(a: readonly number[], i: number, b: readonly number[], j: number): number {
   const n = a.length;
   for (let k = 0; k < n; k += 1) {
-    const d = a[(i + k) % n]! - b[(j + k) % n]!;
+    const d = a[(i + k) % n] - b[(j + k) % n];
     if (d !== 0) return d;
   }
   return 0;
@@ -168,11 +168,11 @@ function equalStarts(word: readonly number[], first: number): number[] {
   const fail = new Int32Array(n + 1);
   fail[0] = -1;
   for (let i = 0; i < n; i += 1) {
-    let k = fail[i]!;
-    while (k >= 0 && word[(first + k) % n] !== word[(first + i) % n]) k = fail[k]!;
+    let k = fail[i];
+    while (k >= 0 && word[(first + k) % n] !== word[(first + i) % n]) k = fail[k];
     fail[i + 1] = k + 1;
   }
-  const period = n % (n - fail[n]!) === 0 ? n - fail[n]! : n;
+  const period = n % (n - fail[n]) === 0 ? n - fail[n] : n;
   const starts: number[] = [];
   for (let at = 0; at < n && starts.length < MAX_STARTS; at += period) starts.push((first + at) % n);
   return starts;
@@ -188,10 +188,10 @@ interface Posed {
 }
 
 function poseAt(shape: Shape, sizing: FullSizing, scale: number, at: number, mirrored: boolean): Posed {
-  const outer = shape[0]!;
+  const outer = shape[0];
   const n = outer.length;
-  const from = outer[mirrored ? (n - at) % n : at]!;
-  const to = outer[mirrored ? n - 1 - at : (at + 1) % n]!;
+  const from = outer[mirrored ? (n - at) % n : at];
+  const to = outer[mirrored ? n - 1 - at : (at + 1) % n];
   const length = Math.hypot(to.x - from.x, to.y - from.y);
   const frame = { cos: (to.x - from.x) / length, sin: (to.y - from.y) / length, x0: from.x, y0: from.y };
   const place = (x: number, y: number): [number, number] => {
@@ -204,7 +204,7 @@ function poseAt(shape: Shape, sizing: FullSizing, scale: number, at: number, mir
   const loops: Edge[][] = [];
   const vertexOf: [number, number][][] = [];
   for (let l = 0; l < shape.length; l += 1) {
-    const loop = shape[l]!;
+    const loop = shape[l];
     const m = loop.length;
     const places = loop.map((edge) => place(edge.x, edge.y));
     const turned: Edge[] = [];
@@ -212,14 +212,14 @@ function poseAt(shape: Shape, sizing: FullSizing, scale: number, at: number, mir
     let start = mirrored ? (n - at) % n : at;
     if (l > 0) {
       start = 0;
-      for (let i = 1; i < m; i += 1) if (compareLists(places[i]!, places[start]!) < 0) start = i;
+      for (let i = 1; i < m; i += 1) if (compareLists(places[i], places[start]) < 0) start = i;
     }
     for (let k = 0; k < m; k += 1) {
       const v = mirrored ? (start - k + 2 * m) % m : (start + k) % m;
-      const edge = loop[mirrored ? (v + m - 1) % m : v]!;
+      const edge = loop[mirrored ? (v + m - 1) % m : v];
       turned.push({
-        x: places[v]![0],
-        y: places[v]![1],
+        x: places[v][0],
+        y: places[v][1],
         bulge: Math.round(edge.bulge / SNAP) * SNAP,
         tag: edge.tag,
       });
@@ -228,8 +228,8 @@ function poseAt(shape: Shape, sizing: FullSizing, scale: number, at: number, mir
     loops.push(turned);
     vertexOf.push(origin);
   }
-  const holes = loops.slice(1).map((loop, i) => ({ loop, origin: vertexOf[i + 1]! }));
-  holes.sort((a, b) => compareLists([a.loop[0]!.x, a.loop[0]!.y], [b.loop[0]!.x, b.loop[0]!.y]));
+  const holes = loops.slice(1).map((loop, i) => ({ loop, origin: vertexOf[i + 1] }));
+  holes.sort((a, b) => compareLists([a.loop[0].x, a.loop[0].y], [b.loop[0].x, b.loop[0].y]));
   const points = sizing.points
     .map((point) => {
       const [x, y] = place(point.x, point.y);
@@ -242,8 +242,8 @@ function poseAt(shape: Shape, sizing: FullSizing, scale: number, at: number, mir
     key,
     frame,
     mirrored,
-    loops: [loops[0]!, ...holes.map(({ loop }) => loop)],
-    vertexOf: [vertexOf[0]!, ...holes.map(({ origin }) => origin)],
+    loops: [loops[0], ...holes.map(({ loop }) => loop)],
+    vertexOf: [vertexOf[0], ...holes.map(({ origin }) => origin)],
     points,
   };
 }

@@ -12,7 +12,7 @@ export function quadraticMesh(
   mesh: Triangulation,
   boundary: Boundary,
 ): { mesh: Mesh; vertexNode: Int32Array } {
-  const order = breadthFirst(mesh, breadthFirst(mesh, 0)[mesh.triangleCount - 1]!);
+  const order = breadthFirst(mesh, breadthFirst(mesh, 0)[mesh.triangleCount - 1]);
   const { vertex, twin } = mesh;
   const vertexNode = new Int32Array(mesh.vertexCount).fill(-1);
   const edgeNode = new Int32Array(3 * mesh.triangleCount).fill(-1);
@@ -20,13 +20,13 @@ export function quadraticMesh(
   let edges = 0;
   for (const t of order) {
     for (let e = 3 * t; e < 3 * t + 3; e += 1) {
-      if (vertexNode[vertex[e]!] === -1) {
-        vertexNode[vertex[e]!] = vertices;
+      if (vertexNode[vertex[e]] === -1) {
+        vertexNode[vertex[e]] = vertices;
         vertices += 1;
       }
       if (edgeNode[e] !== -1) continue;
       edgeNode[e] = edges;
-      if (twin[e]! >= 0) edgeNode[twin[e]!] = edges;
+      if (twin[e] >= 0) edgeNode[twin[e]] = edges;
       edges += 1;
     }
   }
@@ -35,8 +35,8 @@ export function quadraticMesh(
   const x = new Float64Array(nodeCount);
   const y = new Float64Array(nodeCount);
   for (let v = 0; v < mesh.vertexCount; v += 1) {
-    x[vertexNode[v]!] = mesh.x[v]!;
-    y[vertexNode[v]!] = mesh.y[v]!;
+    x[vertexNode[v]] = mesh.x[v];
+    y[vertexNode[v]] = mesh.y[v];
   }
   const triangles = new Int32Array(6 * mesh.triangleCount);
   const pieceEdge = new Int32Array(boundary.count);
@@ -45,21 +45,21 @@ export function quadraticMesh(
   for (const t of order) {
     for (let i = 0; i < 3; i += 1) {
       const e = 3 * t + i;
-      const a = vertex[e]!;
-      const b = vertex[i === 2 ? e - 2 : e + 1]!;
-      const middle = vertices + edgeNode[e]!;
-      triangles[at + i] = vertexNode[a]!;
+      const a = vertex[e];
+      const b = vertex[i === 2 ? e - 2 : e + 1];
+      const middle = vertices + edgeNode[e];
+      triangles[at + i] = vertexNode[a];
       triangles[at + 3 + i] = middle;
-      x[middle] = (mesh.x[a]! + mesh.x[b]!) / 2;
-      y[middle] = (mesh.y[a]! + mesh.y[b]!) / 2;
-      if (twin[e]! >= 0) continue;
-      const piece = -1 - twin[e]!;
+      x[middle] = (mesh.x[a] + mesh.x[b]) / 2;
+      y[middle] = (mesh.y[a] + mesh.y[b]) / 2;
+      if (twin[e] >= 0) continue;
+      const piece = -1 - twin[e];
       pieceEdge[piece] = middle;
-      const curve = boundary.curves[boundary.edge[piece]!]!;
+      const curve = boundary.curves[boundary.edge[piece]];
       if (curve.sweep === 0) continue;
-      pointAt(curve, (boundary.from[piece]! + boundary.to[piece]!) / 2, point);
-      x[middle] = point[0]!;
-      y[middle] = point[1]!;
+      pointAt(curve, (boundary.from[piece] + boundary.to[piece]) / 2, point);
+      x[middle] = point[0];
+      y[middle] = point[1];
     }
     at += 6;
   }
@@ -67,10 +67,10 @@ export function quadraticMesh(
   const edgeList = new Int32Array(3 * boundary.count);
   const boundaryTag = new Int32Array(boundary.count);
   for (let i = 0; i < boundary.count; i += 1) {
-    edgeList[3 * i] = vertexNode[i]!;
-    edgeList[3 * i + 1] = vertexNode[boundary.next[i]!]!;
-    edgeList[3 * i + 2] = pieceEdge[i]!;
-    boundaryTag[i] = boundary.tag[boundary.edge[i]!]!;
+    edgeList[3 * i] = vertexNode[i];
+    edgeList[3 * i + 1] = vertexNode[boundary.next[i]];
+    edgeList[3 * i + 2] = pieceEdge[i];
+    boundaryTag[i] = boundary.tag[boundary.edge[i]];
   }
   return {
     mesh: { vertexCount: vertices, nodeCount, x, y, triangles, boundary: edgeList, boundaryTag },
@@ -86,10 +86,10 @@ function breadthFirst(mesh: Triangulation, first: number): Int32Array {
   order[0] = first;
   seen[first] = 1;
   for (let k = 0; k < count; k += 1) {
-    const base = 3 * order[k]!;
+    const base = 3 * order[k];
     for (let e = base; e < base + 3; e += 1) {
-      if (twin[e]! < 0) continue;
-      const t = Math.floor(twin[e]! / 3);
+      if (twin[e] < 0) continue;
+      const t = Math.floor(twin[e] / 3);
       if (seen[t]) continue;
       seen[t] = 1;
       order[count] = t;
@@ -115,7 +115,7 @@ export function turnOver(mesh: Mesh): void {
 }
 
 function swap(array: Int32Array, i: number, j: number): void {
-  const kept = array[i]!;
-  array[i] = array[j]!;
+  const kept = array[i];
+  array[i] = array[j];
   array[j] = kept;
 }

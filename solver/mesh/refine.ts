@@ -62,15 +62,15 @@ class Refiner {
       if (this.state[t] === TODO && this.front(t) >= 0) this.push(t);
     }
     while (this.head < this.tail) {
-      const t = this.queue[this.head]!;
+      const t = this.queue[this.head];
       const fresh = this.queueBorn[this.head] === this.born[t];
       this.head += 1;
       if (!fresh || this.state[t] !== TODO) continue;
       const e = this.front(t);
       if (e < 0) continue;
       if (this.advance(t, e)) {
-        for (let k = 0; k < inserter.madeCount; k += 1) this.judge(inserter.made[k]!);
-        for (let k = 0; k < inserter.madeCount; k += 1) this.enter(inserter.made[k]!);
+        for (let k = 0; k < inserter.madeCount; k += 1) this.judge(inserter.made[k]);
+        for (let k = 0; k < inserter.madeCount; k += 1) this.enter(inserter.made[k]);
       } else {
         this.state[t] = DONE;
         this.enter(t);
@@ -95,7 +95,7 @@ class Refiner {
       return;
     }
     for (let e = 3 * t; e < 3 * t + 3; e += 1) {
-      const f = this.mesh.twin[e]!;
+      const f = this.mesh.twin[e];
       if (f >= 0 && this.state[Math.floor(f / 3)] === TODO) this.push(Math.floor(f / 3));
     }
   }
@@ -107,11 +107,11 @@ class Refiner {
     let least = Number.POSITIVE_INFINITY;
     for (let i = 0; i < 3; i += 1) {
       const e = 3 * t + i;
-      const f = twin[e]!;
+      const f = twin[e];
       if (f >= 0 && this.state[Math.floor(f / 3)] !== DONE) continue;
-      const a = vertex[e]!;
-      const b = vertex[i === 2 ? e - 2 : e + 1]!;
-      const length = (x[b]! - x[a]!) ** 2 + (y[b]! - y[a]!) ** 2;
+      const a = vertex[e];
+      const b = vertex[i === 2 ? e - 2 : e + 1];
+      const length = (x[b] - x[a]) ** 2 + (y[b] - y[a]) ** 2;
       if (length < least) {
         least = length;
         best = e;
@@ -124,17 +124,17 @@ class Refiner {
     const { mesh } = this;
     const { x, y, vertex } = mesh;
     this.circle(t);
-    const a = vertex[e]!;
-    const b = vertex[e % 3 === 2 ? e - 2 : e + 1]!;
-    const mx = (x[a]! + x[b]!) / 2;
-    const my = (y[a]! + y[b]!) / 2;
-    const half = Math.hypot(x[b]! - x[a]!, y[b]! - y[a]!) / 2;
-    const nx = -(y[b]! - y[a]!) / (2 * half);
-    const ny = (x[b]! - x[a]!) / (2 * half);
+    const a = vertex[e];
+    const b = vertex[e % 3 === 2 ? e - 2 : e + 1];
+    const mx = (x[a] + x[b]) / 2;
+    const my = (y[a] + y[b]) / 2;
+    const half = Math.hypot(x[b] - x[a], y[b] - y[a]) / 2;
+    const nx = -(y[b] - y[a]) / (2 * half);
+    const ny = (x[b] - x[a]) / (2 * half);
     const radius = Math.sqrt(this.r2);
     // Circumcentre above the edge's middle; the new circle passes through the edge's ends.
     const q = (this.cx - mx) * nx + (this.cy - my) * ny;
-    const s = Math.min((mesh.size[a]! + mesh.size[b]!) / 2, this.sizeAt(mx, my, t));
+    const s = Math.min((mesh.size[a] + mesh.size[b]) / 2, this.sizeAt(mx, my, t));
     let rho = Math.max(s / Math.sqrt(3), half);
     rho = Math.min(rho, radius);
     let height = rho + Math.sqrt(Math.max(0, rho * rho - half * half));
@@ -173,27 +173,27 @@ class Refiner {
 
   private circle(t: number): void {
     const { x, y, vertex } = this.mesh;
-    const a = vertex[3 * t]!;
-    const b = vertex[3 * t + 1]!;
-    const c = vertex[3 * t + 2]!;
-    const bx = x[b]! - x[a]!;
-    const by = y[b]! - y[a]!;
-    const cx = x[c]! - x[a]!;
-    const cy = y[c]! - y[a]!;
+    const a = vertex[3 * t];
+    const b = vertex[3 * t + 1];
+    const c = vertex[3 * t + 2];
+    const bx = x[b] - x[a];
+    const by = y[b] - y[a];
+    const cx = x[c] - x[a];
+    const cy = y[c] - y[a];
     const d = 2 * (bx * cy - by * cx);
     const b2 = bx * bx + by * by;
     const c2 = cx * cx + cy * cy;
     const ux = (cy * b2 - by * c2) / d;
     const uy = (bx * c2 - cx * b2) / d;
-    this.cx = x[a]! + ux;
-    this.cy = y[a]! + uy;
+    this.cx = x[a] + ux;
+    this.cy = y[a] + uy;
     this.r2 = ux * ux + uy * uy;
   }
 
   private sizeOf(t: number): number {
     const { size, vertex } = this.mesh;
     const { cx, cy } = this;
-    const mean = (size[vertex[3 * t]!]! + size[vertex[3 * t + 1]!]! + size[vertex[3 * t + 2]!]!) / 3;
+    const mean = (size[vertex[3 * t]] + size[vertex[3 * t + 1]] + size[vertex[3 * t + 2]]) / 3;
     return Math.max(mean, Math.min(this.sizeAt(cx, cy, t), 2 * mean));
   }
 
@@ -203,10 +203,10 @@ class Refiner {
     const growth = this.sizing.growth;
     let s = this.sizing.size;
     for (let e = 3 * t; e < 3 * t + 3; e += 1) {
-      const v = vertex[e]!;
-      const dx = x[v]! - px;
-      const dy = y[v]! - py;
-      s = Math.min(s, size[v]! + growth * Math.sqrt(dx * dx + dy * dy));
+      const v = vertex[e];
+      const dx = x[v] - px;
+      const dy = y[v] - py;
+      s = Math.min(s, size[v] + growth * Math.sqrt(dx * dx + dy * dy));
     }
     for (const at of this.sizing.points) {
       s = Math.min(s, at.size + at.growth * Math.hypot(at.x - px, at.y - py));
@@ -228,7 +228,7 @@ class Refiner {
       }
     }
     this.queue[this.tail] = t;
-    this.queueBorn[this.tail] = this.born[t]!;
+    this.queueBorn[this.tail] = this.born[t];
     this.tail += 1;
   }
 
@@ -250,18 +250,18 @@ function enlarged(array: Int32Array, length: number): Int32Array {
 /** sin² of the least angle of triangle t, 0 where it is turned over. */
 export function leastSin2(mesh: Triangulation, t: number): number {
   const { x, y, vertex } = mesh;
-  const a = vertex[3 * t]!;
-  const b = vertex[3 * t + 1]!;
-  const c = vertex[3 * t + 2]!;
-  const abx = x[b]! - x[a]!;
-  const aby = y[b]! - y[a]!;
-  const acx = x[c]! - x[a]!;
-  const acy = y[c]! - y[a]!;
+  const a = vertex[3 * t];
+  const b = vertex[3 * t + 1];
+  const c = vertex[3 * t + 2];
+  const abx = x[b] - x[a];
+  const aby = y[b] - y[a];
+  const acx = x[c] - x[a];
+  const acy = y[c] - y[a];
   const area = abx * acy - aby * acx;
   if (area <= 0) return 0;
   const ab = abx * abx + aby * aby;
   const ac = acx * acx + acy * acy;
-  const bc = (x[c]! - x[b]!) ** 2 + (y[c]! - y[b]!) ** 2;
+  const bc = (x[c] - x[b]) ** 2 + (y[c] - y[b]) ** 2;
   // sin of the angle opposite the shortest side: twice the area over the other two sides.
   return (area * area * Math.min(ab, ac, bc)) / (ab * ac * bc);
 }
@@ -271,7 +271,7 @@ export function isBad(mesh: Triangulation, t: number): boolean {
   if (leastSin2(mesh, t) >= BAD_SIN2) return false;
   const { vertex, sharp, boundaryCount } = mesh;
   for (let e = 3 * t; e < 3 * t + 3; e += 1) {
-    const v = vertex[e]!;
+    const v = vertex[e];
     if (v < boundaryCount && sharp[v]) return false;
   }
   return true;

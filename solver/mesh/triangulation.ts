@@ -74,9 +74,9 @@ export function triangulateBoundary(boundary: Boundary): Triangulation | null {
   const coordinates = new Float64Array(2 * count + 8);
   let [x0, y0, x1, y1] = [Infinity, Infinity, -Infinity, -Infinity];
   for (let i = 0; i < count; i += 1) {
-    coordinates[2 * i] = x[i]!;
-    coordinates[2 * i + 1] = y[i]!;
-    [x0, y0, x1, y1] = [Math.min(x0, x[i]!), Math.min(y0, y[i]!), Math.max(x1, x[i]!), Math.max(y1, y[i]!)];
+    coordinates[2 * i] = x[i];
+    coordinates[2 * i + 1] = y[i];
+    [x0, y0, x1, y1] = [Math.min(x0, x[i]), Math.min(y0, y[i]), Math.max(x1, x[i]), Math.max(y1, y[i])];
   }
   // Four points far around: points on a straight side, collinear but for rounding, then lie inside the
   // hull, where they are triangulated soundly. What they add is cut away with the rest.
@@ -85,7 +85,7 @@ export function triangulateBoundary(boundary: Boundary): Triangulation | null {
   coordinates.set(around, 2 * count);
   const delaunay = new Delaunator(coordinates);
   const edges: [number, number][] = [];
-  for (let i = 0; i < count; i += 1) edges.push([i, next[i]!]);
+  for (let i = 0; i < count; i += 1) edges.push([i, next[i]]);
   try {
     new Constrainautor(delaunay, edges);
   } catch {
@@ -103,8 +103,8 @@ function carve(boundary: Boundary, triangles: Uint32Array, halfedges: Int32Array
   const after = (e: number): number => (e % 3 === 2 ? e - 2 : e + 1);
   let found = 0;
   for (let e = 0; e < triangles.length; e += 1) {
-    const a = triangles[after(e)]!;
-    if (next[a] === triangles[e]!) {
+    const a = triangles[after(e)];
+    if (next[a] === triangles[e]) {
       found += 1;
       stack.push(Math.floor(e / 3));
     }
@@ -117,25 +117,25 @@ function carve(boundary: Boundary, triangles: Uint32Array, halfedges: Int32Array
     kept[t] = inside;
     inside += 1;
     for (let e = 3 * t; e < 3 * t + 3; e += 1) {
-      const a = triangles[after(e)]!;
-      const b = triangles[e]!;
+      const a = triangles[after(e)];
+      const b = triangles[e];
       if (next[a] === b) continue;
       // Fluid reaches a piece from its outer side: loops nest wrongly.
-      if (previous[a] === b || halfedges[e]! < 0) return null;
-      stack.push(Math.floor(halfedges[e]! / 3));
+      if (previous[a] === b || halfedges[e] < 0) return null;
+      stack.push(Math.floor(halfedges[e] / 3));
     }
   }
   // Corner i of a kept triangle: the old corners in the opposite order 0, 2, 1.
   const vertex = new Int32Array(3 * inside);
   const twin = new Int32Array(3 * inside);
-  const place = (e: number): number => 3 * kept[Math.floor(e / 3)]! + (2 - (e % 3));
+  const place = (e: number): number => 3 * kept[Math.floor(e / 3)] + (2 - (e % 3));
   for (let t = 0; t < kept.length; t += 1) {
     if (kept[t] === -1) continue;
     for (let e = 3 * t; e < 3 * t + 3; e += 1) {
       const here = place(e);
-      const a = triangles[after(e)]!;
+      const a = triangles[after(e)];
       vertex[here] = a;
-      twin[here] = next[a] === triangles[e]! ? -1 - a : place(halfedges[e]!);
+      twin[here] = next[a] === triangles[e] ? -1 - a : place(halfedges[e]);
     }
   }
   return new Triangulation(boundary, vertex, twin);

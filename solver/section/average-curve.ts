@@ -40,5 +40,6 @@ export function averageCurve(curve: WallCurve, window: number): WallCurve {
     from: Float64Array.of(0),
     to: Float64Array.of(total),
     ends: [['bend', 'bend']],
+    endsAt: [[curve.endsAt[0][0], curve.endsAt[0][0]]],
   };
 }

@@ -59,6 +59,29 @@ export function shearNear(curve: WallCurve, place: Place): Reading {
   };
 }
 
+/**
+ * The curve's points with those at the ends of its stretches (corners of zero shear, and where a mirror
+ * line cuts the wall): x, y, shear of each, one after the other.
+ */
+export function curvePoints(curve: WallCurve): number[] {
+  const points: number[] = [];
+  for (let i = 0; i < curve.ends.length; i += 1) {
+    const stretch = extended(curve, i);
+    const end = (which: 0 | 1, s: number): void => {
+      // The corner that closes one stretch opens the next.
+      if (curve.ends[i][which] === 'bend' || (which === 0 && i > 0 && curve.ends[i - 1][1] === 'still'))
+        return;
+      points.push(...curve.endsAt[i][which], Math.max(0, interpolate(stretch, stretch.shear, s)));
+    };
+    end(0, curve.from[i]);
+    for (let p = curve.start[i]; p < curve.start[i + 1]; p += 1) {
+      points.push(curve.x[p], curve.y[p], Math.max(0, curve.shear[p]));
+    }
+    end(1, curve.to[i]);
+  }
+  return points;
+}
+
 /** A stretch with what is known beyond its ends: zero in convex corners, the image behind a mirror. */
 export interface Stretch {
   readonly s: number[];
@@ -80,12 +103,12 @@ export function extended(curve: WallCurve, i: number): Stretch {
     shear: pick(curve.shear),
     doubt: pick(curve.doubt),
   };
-  extend(stretch, curve.ends[i][0], curve.from[i], false);
-  extend(stretch, curve.ends[i][1], curve.to[i], true);
+  extend(stretch, curve.ends[i][0], curve.from[i], curve.endsAt[i][0], false);
+  extend(stretch, curve.ends[i][1], curve.to[i], curve.endsAt[i][1], true);
   return stretch;
 }
 
-function extend(stretch: Stretch, end: StretchEnd, s: number, after: boolean): void {
+function extend(stretch: Stretch, end: StretchEnd, s: number, at: Place, after: boolean): void {
   const { length } = stretch.s;
   const add = (list: number[], value: number): void => {
     if (after) list.push(value);
@@ -93,11 +116,9 @@ function extend(stretch: Stretch, end: StretchEnd, s: number, after: boolean): v
   };
   if (end === 'still') {
     const near = after ? length - 1 : 0;
-    const next = after ? length - 2 : 1;
-    const t = (s - stretch.s[near]) / (stretch.s[near] - stretch.s[next]);
     add(stretch.s, s);
-    add(stretch.x, stretch.x[near] + t * (stretch.x[near] - stretch.x[next]));
-    add(stretch.y, stretch.y[near] + t * (stretch.y[near] - stretch.y[next]));
+    add(stretch.x, at[0]);
+    add(stretch.y, at[1]);
     add(stretch.shear, 0);
     add(stretch.doubt, stretch.doubt[near]);
   }

@@ -7,7 +7,7 @@ import { elementTable } from './element-table.ts';
 import { peakVelocity } from './peak-velocity.ts';
 import { planeFlow } from './plane-flow.ts';
 import { DEGREE_4 } from './quadrature.ts';
-import { peakOf, shearNear } from './read-curve.ts';
+import { curvePoints, peakOf, shearNear } from './read-curve.ts';
 import { type SectionShape, SYMMETRY } from './section-shape.ts';
 import { stiffness } from './stiffness.ts';
 import type { UnitSection } from './unit-section.ts';
@@ -134,8 +134,6 @@ export function solveOn(shape: SectionShape, mesh: Mesh): Solved {
   const peakError = peak ? (2 * peak.doubt) / peak.shear : 0;
   const shearError = Math.max(peakError, (2 * floor.doubt) / mean, (2 * side.doubt) / mean);
   const meshError = (flow.upper - flow.lower) / (flow.upper + flow.lower) + geometry;
-  const points: number[] = [];
-  for (let p = 0; p < curve.x.length; p += 1) points.push(curve.x[p], curve.y[p], curve.shear[p]);
   return {
     unit: {
       conductance,
@@ -147,7 +145,7 @@ export function solveOn(shape: SectionShape, mesh: Mesh): Solved {
       sideShear: side.shear,
       error: meshError + (shape.moved * squareOf(wholeCurve)) / conductance,
       shearError,
-      wall: points,
+      wall: curvePoints(curve),
     },
     meshError,
     geometry,

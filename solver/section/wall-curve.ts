@@ -24,6 +24,7 @@ export interface WallCurve {
   readonly to: Float64Array;
   /** What lies at a stretch's two ends. */
   readonly ends: readonly (readonly [StretchEnd, StretchEnd])[];
+  readonly endsAt: readonly (readonly [Place, Place])[];
 }
 
 /** A convex corner, where the shear is zero; a mirror line; or a bend that interpolation must not cross. */
@@ -109,6 +110,12 @@ export function wallCurve(
   const from = [0];
   const to: number[] = [];
   const ends: [StretchEnd, StretchEnd][] = [];
+  const endsAt: [Place, Place][] = [];
+  const nodeAt = (edge: number, end: 0 | 1): Place => {
+    const node = mesh.boundary[3 * edge + end];
+    return [mesh.x[node], mesh.y[node]];
+  };
+  let openingAt = nodeAt(edges[0], 0);
   const open = mirrored(mesh, edges);
   let opening = endOf(turns[edges.length], open);
   let along = 0;
@@ -137,7 +144,9 @@ export function wallCurve(
       start.push(2 * (k + 1));
       to.push(along);
       ends.push([opening, end]);
+      endsAt.push([openingAt, nodeAt(edge, 1)]);
       opening = end;
+      openingAt = nodeAt(edge, 1);
       if (!last) from.push(along);
     }
   }
@@ -151,6 +160,7 @@ export function wallCurve(
     from: Float64Array.from(from),
     to: Float64Array.from(to),
     ends,
+    endsAt,
   };
 }
 
