@@ -31,7 +31,11 @@ function keysKept(value: unknown): number {
     if (next === null || typeof next !== 'object') continue;
     const inner: unknown[] = Array.isArray(next) ? next : Object.values(next);
     if (!Array.isArray(next)) count += inner.length;
-    for (const entry of inner) if (typeof entry === 'object') rest.push(entry);
+    for (const entry of inner) {
+      // Points are most of what a long description holds, and they hold no keys.
+      const isPoint = Array.isArray(entry) && typeof entry[0] === 'number' && entry.length === 2;
+      if (typeof entry === 'object' && !(isPoint && typeof entry[1] === 'number')) rest.push(entry);
+    }
   }
   return count;
 }

@@ -136,7 +136,6 @@ export function checkPort(port: Port): void {
 /** What a layer's cross-section asks of a channel that lies on it. */
 export function checkOnLayer(channel: Channel, layer: Layer): void {
   const { profile, depth } = layer;
-  const least = Math.min(...channel.width);
   if (profile.kind === 'circle' && channel.width.some((width) => width !== depth)) {
     const wrong = channel.width.find((width) => width !== depth)!;
     throw new Fault(
@@ -147,6 +146,7 @@ export function checkOnLayer(channel: Channel, layer: Layer): void {
     );
   }
   if (profile.kind === 'trapezoid') {
+    const least = Math.min(...channel.width);
     const narrowing = (2 * depth) / Math.tan((profile.wallAngle * Math.PI) / 180);
     if (narrowing >= least * (1 - 1e-12)) {
       throw new Fault(

@@ -102,9 +102,13 @@ function each<T>(
   entries: readonly T[],
   check: (entry: T) => void,
 ): void {
-  entries.forEach((entry, i) => {
-    at([list, i], () => check(entry));
-  });
+  let i = 0;
+  try {
+    for (; i < entries.length; i += 1) check(entries[i]!);
+  } catch (error) {
+    if (error instanceof Fault) error.path.unshift(list, i);
+    throw error;
+  }
 }
 
 /** Targets and limits name what is there. */
