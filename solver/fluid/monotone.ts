@@ -33,7 +33,7 @@ function endSlope(near: number, far: number, secant: number, next: number): numb
 }
 
 /** The knot at or below `at`, so that `at` lies in the interval it opens; clamped to the table. */
-export function intervalOf(x: ArrayLike<number>, at: number): number {
+function intervalOf(x: ArrayLike<number>, at: number): number {
   let low = 0;
   let high = x.length - 1;
   while (high - low > 1) {
@@ -58,18 +58,4 @@ export function hermite(
   return (
     r * r * ((1 + 2 * s) * y[i] + s * h * slope[i]) + s * s * ((1 + 2 * r) * y[i + 1] - r * h * slope[i + 1])
   );
-}
-
-/** Derivative at `at` of the same cubic. */
-export function hermiteSlope(
-  x: ArrayLike<number>,
-  y: ArrayLike<number>,
-  slope: ArrayLike<number>,
-  at: number,
-): number {
-  const i = intervalOf(x, at);
-  const h = x[i + 1] - x[i];
-  const s = (at - x[i]) / h;
-  const r = 1 - s;
-  return (6 * s * r * (y[i + 1] - y[i])) / h + r * (1 - 3 * s) * slope[i] + s * (3 * s - 2) * slope[i + 1];
 }

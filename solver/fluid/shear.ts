@@ -48,19 +48,7 @@ export function viscositySlope(model: ShearModel, rate: number, smallest = 0): n
   }
 }
 
-/** Shear stress at a shear rate, Pa; a Casson fluid at rest bears its yield stress. */
-export function shearStress(model: ShearModel, rate: number): number {
-  switch (model.kind) {
-    case 'power-law':
-      return model.consistency * rate ** model.index;
-    case 'carreau':
-      return apparentViscosity(model, rate) * rate;
-    case 'casson':
-      return (Math.sqrt(model.yieldStress) + Math.sqrt(model.viscosity * rate)) ** 2;
-  }
-}
-
-/** Shear rate (1/s) under a stress (Pa): the inverse of `shearStress`, 0 up to the yield stress. */
+/** Shear rate (1/s) under a stress (Pa): 0 up to the yield stress. */
 export function shearRate(model: ShearModel, stress: number): number {
   switch (model.kind) {
     case 'power-law':

@@ -1,7 +1,7 @@
 import { BLOOD_CARREAU } from '../../solver/fluid/reference.ts';
 import { apparentViscosity } from '../../solver/fluid/shear.ts';
-import { plateFlow, tubeFlow } from '../../solver/section/rheology/closed-forms.ts';
 import { verify } from '../verify/row.ts';
+import { plateFlow, tubeFlow } from './shear-thinning-ducts.ts';
 
 const relative = (got: number, wanted: number): number => Math.abs(got / wanted - 1);
 

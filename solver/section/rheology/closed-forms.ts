@@ -8,25 +8,9 @@ import type { ShearModel } from '../../fluid/spec.ts';
  *   tube of radius R:         Q = pi R^3 / tau_w^3 * integral of tau^2 g(tau)      (Rabinowitsch, Mooney)
  *   plates, gap h, width W:   Q = W h^2 / (2 tau_w^2) * integral of tau g(tau)
  *
- * from 0 to tau_w. The power law and Casson have closed forms, Carreau is integrated.
+ * from 0 to tau_w, and the velocity on the axis is that of power 0 times the distance to the wall. The
+ * power law and Casson have closed forms, Carreau is integrated.
  */
-
-/** Flow (m^3/s) through a round tube under a pressure gradient (Pa/m); `radius` in m. */
-export function tubeFlow(model: ShearModel, radius: number, gradient: number): number {
-  const wall = (gradient * radius) / 2;
-  return wall > 0 ? Math.PI * radius ** 3 * rateMoment(model, wall, 2) : 0;
-}
-
-/** Flow (m^3/s) between parallel plates, side walls left out; `gap` and `width` in m. */
-export function plateFlow(model: ShearModel, gap: number, width: number, gradient: number): number {
-  const wall = (gradient * gap) / 2;
-  return wall > 0 ? (width * gap ** 2 * rateMoment(model, wall, 1)) / 2 : 0;
-}
-
-/** Velocity on the axis over the distance from axis to wall (1/s): tau_w^-1 times the integral of g(tau). */
-export function axisRate(model: ShearModel, wall: number): number {
-  return rateMoment(model, wall, 0);
-}
 
 /** tau_w^-(power + 1) times the integral of tau^power g(tau) from 0 to tau_w, 1/s. */
 export function rateMoment(model: ShearModel, wall: number, power: 0 | 1 | 2): number {

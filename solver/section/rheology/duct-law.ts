@@ -34,6 +34,8 @@ export interface DuctState {
   readonly meanShear: number;
   /** Where a soft roof is given: rise over the depth at both ends (negative under suction), else zeros. */
   readonly rise: readonly [number, number];
+  /** Whether suction brings a soft roof so near to the floor that its law no longer holds. */
+  readonly collapsed: boolean;
 }
 
 export interface DuctShape {

@@ -1,10 +1,10 @@
 import { describe, expect, test } from 'vitest';
+import { plateFlow } from '../../../test/outside/shear-thinning-ducts.ts';
 import { verify } from '../../../test/verify/row.ts';
 import { BLOOD_CARREAU } from '../../fluid/reference.ts';
 import type { ShearModel } from '../../fluid/spec.ts';
 import type { Mesh } from '../../mesh/mesh.ts';
 import { Problem } from '../../problem/problem.ts';
-import { plateFlow } from './closed-forms.ts';
 import { sectionElements } from './elements.ts';
 import { solveSection } from './newton.ts';
 import { quarterRectangle, WALL } from './rectangle-mesh.ts';

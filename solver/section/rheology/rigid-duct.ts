@@ -117,6 +117,7 @@ export function rigidDuct(taper: RigidTaper, length: number): DuctFlowLaw {
         peakVelocity,
         meanShear: force / wall,
         rise: [0, 0],
+        collapsed: false,
       };
     },
   };

@@ -1,4 +1,4 @@
-import { meanOpening, opening, openingSlope, type RoofLaw } from '../roof/roof.ts';
+import { collapsed, meanOpening, opening, openingSlope, type RoofLaw } from '../roof/roof.ts';
 import type { DuctFlowLaw, DuctShape } from './duct-law.ts';
 import { inverse } from './inverse.ts';
 import type { LocalFlow, Rheology } from './local.ts';
@@ -82,14 +82,15 @@ export function softDuct(
         else if (peakShear !== null) peakShear = Math.max(peakShear, stress * mean);
         peakVelocity = Math.max(peakVelocity, (velocity * flow) / (section.area * open));
       }
-      const ends = [places[0].roof.slope * pFrom, places[places.length - 1].roof.slope * pTo] as const;
+      const [first, last] = [places[0], places[places.length - 1]];
       return {
         flow: Math.sign(pFrom - pTo) * flow,
         flowing: flow > 0 || local.yieldGradient === 0,
         peakShear,
         peakVelocity,
         meanShear: force / wall,
-        rise: ends,
+        rise: [first.roof.slope * pFrom, last.roof.slope * pTo],
+        collapsed: collapsed(first.roof, pFrom) || collapsed(last.roof, pTo),
       };
     },
   };

@@ -1,8 +1,8 @@
 import { describe, expect, test } from 'vitest';
+import { tubeFlow } from '../../../test/outside/shear-thinning-ducts.ts';
 import { verify } from '../../../test/verify/row.ts';
 import { BLOOD_CARREAU, BLOOD_CASSON } from '../../fluid/reference.ts';
 import type { ShearModel } from '../../fluid/spec.ts';
-import { tubeFlow } from './closed-forms.ts';
 import { sectionElements } from './elements.ts';
 import { solveSection } from './newton.ts';
 import { quarterRectangle, WALL } from './rectangle-mesh.ts';

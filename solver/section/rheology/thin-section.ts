@@ -59,8 +59,7 @@ export function thinSection(
     out[1] += two[1];
   };
   const ordinaryGradient = fluid.stress / radius;
-  // Where a stress must be turned into a rate first, the whole is worth sampling.
-  const flow = fluid.model.kind === 'carreau' ? resampled(direct, 0, ordinaryGradient) : direct;
+  const flow = resampled(direct, yieldGradient, ordinaryGradient);
   return {
     section,
     yieldGradient,

@@ -111,11 +111,6 @@ function caution(...parts: string[]): { caution?: string } {
 /** Where the roof has come down to this share of the depth the laws end; suction beyond is held here. */
 const LOWEST = -0.9;
 
-/** Pressure (Pa, negative) at which the roof would lie on the floor. */
-export function collapsePressure(law: RoofLaw): number {
-  return -1 / law.slope;
-}
-
 /** Whether a pressure lies so low that `opening` no longer follows the law. */
 export function collapsed(law: RoofLaw, pressure: number): boolean {
   return law.slope * pressure < LOWEST;
