@@ -54,7 +54,7 @@ export function writingOf(column: Column, rows: readonly Row[], index: number): 
     smallest = Math.min(smallest, size);
   }
   const unit = column.unit ?? (column.kind ? unitFor(largest, column.kind) : '');
-  if (largest === 0) return { unit, decimals: 0 };
+  if (largest === 0) return { unit, decimals: column.kind === 'share' ? 2 : 0 };
   const places = (value: number, digits: number): number =>
     digits - 1 - Math.floor(Math.log10(Math.abs(inUnit(value, unit))) + 1e-9);
   // a few tiny figures do not make all others long

@@ -69,7 +69,7 @@ function ports(chip: Chip, result: Result | null): Table {
     const wants = wanted.get(port.id);
     const gets = got.get(port.id);
     const there = solved.get(port.id);
-    const off = gets && gets.got !== null ? gets.got / gets.wanted - 1 : null;
+    const off = gets && gets.got !== null ? beyondNoise(gets.got / gets.wanted - 1) : null;
     // where wishes are of both kinds, shares are left to their own column
     const asked = wants && ('flow' in wants ? wants.flow : byFlow ? null : wants.share);
     return {
@@ -90,6 +90,9 @@ function ports(chip: Chip, result: Result | null): Table {
   });
   return { columns, rows };
 }
+
+/** Rounding of doubles is no deviation. */
+const beyondNoise = (off: number): number => (Math.abs(off) < 1e-9 ? 0 : off);
 
 function channels(chip: Chip, result: Result | null): Table {
   const columns: Column[] = [

@@ -1,17 +1,8 @@
+import './mark.ts';
 import Plotly, { type Data, type Layout } from 'plotly.js-dist-min';
 import { useEffect, useReducer, useRef } from 'react';
 import { onTheme, palette } from '../look/theme.ts';
 import { FIGURE_FACE, SIZES } from '../look/tokens.ts';
-
-// The page's own stylesheet holds the few rules that plotly would write into the page; a marked element
-// of this name tells it not to.
-if (!document.getElementById('plotly.js-style-global')) {
-  const mark = document.createElement('div');
-  mark.id = 'plotly.js-style-global';
-  mark.className = 'no-inline-styles';
-  mark.hidden = true;
-  document.body.append(mark);
-}
 
 export interface PlotProps {
   readonly title: string;

@@ -102,7 +102,10 @@ export class Bodies {
     ctx.lineCap = 'butt';
     const colours = shades(style.scheme, style.ramp);
     const fluid = (shade: number): string => (shade < 0 ? style.palette.field : colours[shade]!);
-    this.drawChambers(ctx, scale, style);
+    const chambers = this.chambers();
+    ctx.lineWidth = (2 * WALL) / scale;
+    ctx.strokeStyle = style.palette.ink;
+    ctx.stroke(chambers);
     const near = spatial.channelsIn(inView(camera, size, 4));
     if (near.length > MANY) {
       this.groups ??= this.group();
@@ -119,10 +122,13 @@ export class Bodies {
               scale,
             );
     }
+    // over the ends of channels that reach into them: one cavity, one ground
+    ctx.fillStyle = style.palette.field;
+    ctx.fill(chambers);
     ctx.restore();
   }
 
-  private drawChambers(ctx: CanvasRenderingContext2D, scale: number, style: BodyStyle): void {
+  private chambers(): Path2D {
     const path = new Path2D();
     for (const { outline } of this.scene.chip.chambers) {
       outline.forEach(([x, y], i) => {
@@ -131,11 +137,7 @@ export class Bodies {
       });
       path.closePath();
     }
-    ctx.lineWidth = (2 * WALL) / scale;
-    ctx.strokeStyle = style.palette.ink;
-    ctx.stroke(path);
-    ctx.fillStyle = style.palette.field;
-    ctx.fill(path);
+    return path;
   }
 
   private drawGroups(

@@ -48,6 +48,19 @@ export function drawPorts(
 
 const LINE = 14;
 
+/** `around` has the name above and the figure below. */
+type Side = PortWords['side'] | 'around';
+
+/** Where else words may go when their own side is taken. */
+const OTHERS: Readonly<Record<Side, readonly Side[]>> = {
+  around: [],
+  // ports that feed to the right mostly stand at the left edge, where its figures are
+  left: ['around', 'above', 'below', 'left', 'right'],
+  right: ['right', 'above', 'below', 'left'],
+  above: ['above', 'right', 'left', 'below'],
+  below: ['below', 'right', 'left', 'above'],
+};
+
 /** Names and figures beside the ports, as many as have room. */
 export function drawPortWords(
   ctx: CanvasRenderingContext2D,
@@ -59,26 +72,45 @@ export function drawPortWords(
 ): void {
   ctx.textBaseline = 'middle';
   for (const { port, name, figure, side, missed } of words) {
-    const at = toScreen(camera, size, port.at);
-    if (!onScreen(at, size, 80)) continue;
-    const away = Math.max(LEAST_RING, (port.diameter / 2) * camera.scale) + 7;
+    const [x, y] = toScreen(camera, size, port.at);
+    if (!onScreen([x, y], size, 80)) continue;
+    const away = Math.max(LEAST_RING, (port.diameter / 2) * camera.scale) + 6;
     const short = name.length > 24 ? `${name.slice(0, 23)}…` : name;
     ctx.font = `600 ${SIZES.label}px ${FIGURE_FACE}`;
-    const width = Math.max(ctx.measureText(short).width, figure.length * 6);
-    const left = side === 'right' ? at[0] + away : side === 'left' ? at[0] - width / 2 : at[0] - width / 2;
-    const apart = side === 'left';
-    // beside the chip's left edge there is no room: name above, figure below
-    const top =
-      side === 'right' ? at[1] - LINE : side === 'below' ? at[1] + away - 4 : at[1] - away - 2 * LINE + 4;
-    if (!room.take(left, apart ? at[1] - away - LINE : top, width, apart ? 2 * (away + LINE) : 2 * LINE))
-      continue;
-    ctx.textAlign = side === 'right' ? 'left' : 'center';
-    const x = side === 'right' ? left : at[0];
-    ctx.fillStyle = palette.ink;
-    ctx.fillText(short, x, apart ? at[1] - away - LINE / 2 : top + LINE / 2);
+    const nameWide = ctx.measureText(short).width;
     ctx.font = `${missed ? 650 : 400} ${SIZES.label}px ${FIGURE_FACE}`;
+    const wide = Math.max(nameWide, ctx.measureText(figure).width);
+    /** Left, tops of the two lines. */
+    const box = (where: Side): readonly [number, number, number] =>
+      where === 'right'
+        ? [x + away, y - LINE, y]
+        : where === 'left'
+          ? [x - away - wide, y - LINE, y]
+          : where === 'around'
+            ? [x - wide / 2, y - away - LINE, y + away]
+            : where === 'above'
+              ? [x - wide / 2, y - away - 2 * LINE, y - away - LINE]
+              : [x - wide / 2, y + away, y + away + LINE];
+    const found = OTHERS[side].find((where) => {
+      const [left, first, second] = box(where);
+      return (
+        left > 2 &&
+        left + wide < size.width - 2 &&
+        room.free(left - 2, first, wide + 4, LINE) &&
+        room.free(left - 2, second, wide + 4, LINE)
+      );
+    });
+    if (!found) continue;
+    const [left, first, second] = box(found);
+    room.fill(left - 2, first, wide + 4, LINE);
+    room.fill(left - 2, second, wide + 4, LINE);
+    ctx.textAlign = found === 'right' ? 'left' : found === 'left' ? 'right' : 'center';
+    const at = found === 'right' ? left : found === 'left' ? left + wide : x;
     ctx.fillStyle = missed ? palette.alarm : palette.soft;
-    ctx.fillText(figure, x, apart ? at[1] + away + LINE / 2 : top + LINE * 1.5);
+    ctx.fillText(figure, at, second + LINE / 2);
+    ctx.font = `600 ${SIZES.label}px ${FIGURE_FACE}`;
+    ctx.fillStyle = palette.ink;
+    ctx.fillText(short, at, first + LINE / 2);
   }
 }
 

@@ -5,6 +5,7 @@ import { onTheme, palette, scheme } from '../look/theme.ts';
 import type { Desk } from '../state/desk.ts';
 import type { Workbench } from '../state/workbench.ts';
 import { Bodies } from './bodies.ts';
+import { toScreen } from './camera.ts';
 import { drawChannelWords } from './channel-words.ts';
 import { drawEdge, drawScaleBar } from './edge.ts';
 import { paintHand } from './hand-paint.ts';
@@ -83,6 +84,10 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         const look = palette();
         drawPorts(ctx, d.chip, camera, size, look);
         const room = new Room();
+        for (const port of d.chip.ports) {
+          const [x, y] = toScreen(camera, size, port.at);
+          room.fill(x - 6, y - 6, 12, 12);
+        }
         drawPlaceWords(ctx, d.places, camera, size, look, room);
         drawPortWords(ctx, d.ports, camera, size, look, room);
         drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, desk.spatial());

@@ -22,7 +22,7 @@ export function PointerNote() {
     const left = right ? x + 18 : x - 18 - width;
     const top = y + 18 + height < view.size.height ? y + 18 : y - 18 - height;
     element.style.left = `${Math.max(4, Math.min(left, view.size.width - width - 4))}px`;
-    element.style.top = `${Math.max(4, top)}px`;
+    element.style.top = `${Math.max(4, Math.min(top, view.size.height - height - 4))}px`;
   });
   if (!preview.readout && !preview.hint) return null;
   return (

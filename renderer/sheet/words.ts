@@ -1,7 +1,8 @@
 import type { Chip, Drive, Port } from '../../solver/chip/chip.ts';
 import type { Result } from '../../solver/chip/result.ts';
+import type { Kind } from '../../solver/chip/units.ts';
 import type { Xy } from '../geometry/vector.ts';
-import { figure } from '../words/figure.ts';
+import { figure, typed, unitFor } from '../words/figure.ts';
 
 /** What stands beside a port: its name and its most telling figure. */
 export interface PortWords {
@@ -14,14 +15,17 @@ export interface PortWords {
   readonly missed: boolean;
 }
 
+/** What a person gave has as many digits as they gave it. */
+const asGiven = (value: number, kind: Kind): string => typed(value, kind, unitFor(value, kind));
+
 export function driveText(drive: Drive): string {
   switch (drive.kind) {
     case 'pressure':
-      return drive.pressure === 0 ? 'open' : figure(drive.pressure, 'pressure');
+      return drive.pressure === 0 ? 'open' : asGiven(drive.pressure, 'pressure');
     case 'flow':
-      return figure(drive.flow, 'flow');
+      return asGiven(drive.flow, 'flow');
     case 'head':
-      return `${figure(drive.head, 'length', { digits: 3 })} high`;
+      return `${asGiven(drive.head, 'length')} high`;
     default:
       return 'closed';
   }
@@ -39,7 +43,7 @@ export function portWords(chip: Chip, result: Result | null): readonly PortWords
         : solved?.share == null
           ? driveText(port.drive)
           : port.drive.kind === 'flow'
-            ? figure(solved.flow, 'flow')
+            ? driveText(port.drive)
             : (solved.flow ?? 0) < 0
               ? figure(solved.share, 'share', { digits: 3, unit: '%' })
               : driveText(port.drive);

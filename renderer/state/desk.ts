@@ -115,7 +115,7 @@ export function createDesk(client: Client, solver: Solver): Desk {
       camera: null,
       layer: '',
       panel: 'card',
-      says: state.modeSays || state.notes.join(' '),
+      says: [state.mode === 'draft' ? '' : state.modeSays, ...state.notes].filter(Boolean).join(' '),
     });
     solver.load(state.chip, {});
   };

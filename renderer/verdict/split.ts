@@ -55,7 +55,8 @@ export function splitAnswer(evidence: Evidence): Answer {
     return answer('unknown', lost ?? only, [
       `Not known: the flow at ${nameOf(lost ?? only)} is too small to be resolved.`,
     ]);
-  const off = strong(percent(Math.abs(offOf(worst))));
+  // less than a hundredth of a per cent is nothing that anyone can measure
+  const off = strong(percent(Math.max(1e-4, Math.abs(offOf(worst)))));
   if (targets.length === 1)
     return answer('yes', worst, [`Yes: ${nameOf(worst)} is within `, off, ' of its target.']);
   const all = targets.length === 2 ? 'Both' : `All ${count(targets.length)}`;
@@ -71,7 +72,7 @@ export function splitAnswer(evidence: Evidence): Answer {
 function noun(targets: readonly TargetResult[]): string {
   const stems = new Set(targets.map((target) => /^(\p{L}{2,12})[\s_-]*\d+$/u.exec(nameOf(target))?.[1]));
   const [stem] = stems;
-  if (stems.size === 1 && stem) return `${stem}s`;
+  if (stems.size === 1 && stem && !['in', 'out', 'port'].includes(stem)) return `${stem}s`;
   return targets.every((target) => target.port !== undefined) ? 'outlets' : 'targets';
 }
 

@@ -12,7 +12,7 @@ import {
   unitFor,
 } from './figure.ts';
 
-const plain = (text: string) => text.replaceAll('\u202f', ' ');
+const plain = (text: string) => text.replaceAll('\u00a0', ' ');
 
 describe('figures', () => {
   test.each([

@@ -1,8 +1,8 @@
 import { inUnit, type Kind } from '../../solver/chip/units.ts';
 import { bestUnit, formatNumber, unitInPrint } from '../../solver/chip/units-format.ts';
 
-/** A space that neither breaks nor stretches, between a figure and its unit. */
-const THIN = '\u202f';
+/** A space that does not break, between a figure and its unit. */
+const SPACE = '\u00a0';
 
 /** Units that a person chose to see, by kind; the ladder of the kind where there is none. */
 export type UnitHabit = Readonly<Partial<Record<Kind, string>>>;
@@ -38,7 +38,7 @@ export function number(value: number, digits = 4): string {
   if (Number.isNaN(value)) return 'no number';
   const text = formatNumber(value, digits);
   const [wholePart, fraction] = text.split('.');
-  if (!/^−?\d{5,}$/.test(wholePart!)) return text.replaceAll(' ', THIN);
+  if (!/^−?\d{5,}$/.test(wholePart!)) return text.replaceAll(' ', SPACE);
   const grouped = wholePart!.replace(/\B(?=(\d{3})+$)/g, ',');
   return fraction ? `${grouped}.${fraction}` : grouped;
 }
@@ -49,7 +49,7 @@ export function figure(value: number | null | undefined, kind: Kind, style: Styl
   const unit = style.unit ?? unitFor(value, kind);
   const text = figureIn(value, unit, style);
   if (unit === '') return text;
-  return unit === 'deg' ? `${text}°` : `${text}${THIN}${unitInPrint(unit)}`;
+  return unit === 'deg' ? `${text}°` : `${text}${SPACE}${unitInPrint(unit)}`;
 }
 
 /** The figure alone, in a given unit, without it. */
