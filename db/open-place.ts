@@ -12,6 +12,7 @@ import { writeProblem } from './place/replace.ts';
 import type { Project } from './project.ts';
 import { checkedVersion } from './read.ts';
 import { salvage } from './salvage/salvage.ts';
+import { projectProblem } from './words.ts';
 import type { WorkplaceSettings } from './workplace.ts';
 
 /** An open project with where it lives; `path` is what it was opened by. */
@@ -55,7 +56,9 @@ async function openCopy(
   const there = kind === 'write-protected' ? null : await mark(path);
   if (there && !isLock(there)) return await lookAt(path, there);
   return await holding(there ? [there] : [], async () => {
-    const copy = await PrivateCopy.take(settings.userData, path, draftFolder(settings));
+    const copy = await PrivateCopy.take(settings.userData, path, draftFolder(settings)).catch((error) => {
+      throw projectProblem(error, path);
+    });
     const here = await mark(copy.file);
     if (!isLock(here)) {
       await there?.release();
@@ -84,13 +87,9 @@ async function openSalvaged(settings: WorkplaceSettings, path: string, damage: D
   try {
     report = await salvage(path, draft, settings.program);
   } catch (error) {
-    if (!(error instanceof Problem)) throw error;
-    throw new Problem(
-      error.kind,
-      error.what,
-      error.where,
-      newest ? `Go back to a backup.${backup}` : error.remedy,
-    );
+    const told = projectProblem(error, path);
+    const remedy = newest ? `Go back to a backup.${backup}` : told.remedy;
+    throw new Problem(told.kind, told.what, told.where, remedy);
   }
   const opened = await openHere(settings, draft, true);
   const first = `"${basename(path)}" is damaged: ${damage.reasons.join('; ')}. It is left as it is; what could be read of it is here, as a draft.${backup}`;

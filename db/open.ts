@@ -6,7 +6,7 @@ import { migrate } from './layout/layout.ts';
 import { VERSION } from './layout/tables.ts';
 import { syncFile, writeProblem } from './place/replace.ts';
 import { Project } from './project.ts';
-import { checkedVersion, contentOf, hasLog, openInMemory } from './read.ts';
+import { checkedVersion, contentOf, hasLog, isOfTheDisk, openInMemory } from './read.ts';
 import { Store } from './store/store.ts';
 import { projectProblem } from './words.ts';
 
@@ -22,12 +22,16 @@ export async function openForWork(
   const notes: string[] = [];
   if (version < VERSION) {
     // Tried in memory first: what cannot be brought up is not touched.
-    const trial = await openInMemory(path);
-    try {
-      contentOf(trial, version);
-    } finally {
-      trial.close();
-    }
+    const trial = await openInMemory(path).catch((error) => {
+      throw projectProblem(error, path);
+    });
+    telling(path, () => {
+      try {
+        contentOf(trial, version);
+      } finally {
+        trial.close();
+      }
+    });
     const aside = await setAside(path, userData, version);
     notes.push(`The project was brought up from an older form; the file as it was is kept as ${aside}.`);
   } else {
@@ -56,7 +60,9 @@ export async function openForWork(
 /** Opens a project file as it stands, for looking only. */
 export async function openForReading(path: string): Promise<Project> {
   const version = await checkedVersion(path);
-  const store = await openInMemory(path);
+  const store = await openInMemory(path).catch((error) => {
+    throw projectProblem(error, path);
+  });
   return telling(path, () => {
     try {
       return new Project(store, path, contentOf(store, version), true);
@@ -87,8 +93,7 @@ function telling<T>(path: string, work: () => T): T {
     return work();
   } catch (error) {
     if (error instanceof Problem || error instanceof Damage) throw error;
-    const code = String((error as { code?: unknown }).code ?? '');
-    if (/^SQLITE_(CORRUPT|NOTADB|ERROR|SCHEMA|FORMAT)/.test(code)) throw new Damage(['it cannot be opened']);
-    throw projectProblem(error, path);
+    if (isOfTheDisk(error)) throw projectProblem(error, path);
+    throw new Damage(['it cannot be opened']);
   }
 }

@@ -9,6 +9,7 @@ import { kindOfFile, migrate } from './layout/layout.ts';
 import { VERSION } from './layout/tables.ts';
 import { stepAsync } from './seam.ts';
 import { Store } from './store/store.ts';
+import { projectProblem } from './words.ts';
 
 /** Bytes that a project file may have; a larger one is refused unread. */
 const MOST_BYTES = 1024 * 1024 * 1024;
@@ -100,11 +101,30 @@ export function contentOf(store: Store, version: number): Content {
     if (version < VERSION) migrate(store, version);
     return readContent(store);
   } catch (error) {
-    if (error instanceof Problem || error instanceof Damage) throw error;
-    const code = String((error as { code?: unknown }).code ?? '');
-    if (/^SQLITE_(IOERR|BUSY|FULL|READONLY|NOMEM|CANTOPEN)/.test(code)) throw error;
+    if (error instanceof Damage) throw error;
+    if (error instanceof Problem) throw unusable(error);
+    if (isOfTheDisk(error)) throw error;
     throw new Damage(['it cannot be read to its end']);
   }
+}
+
+/** A file that is as it was written, but by something that is not this program. */
+function unusable({ what, where }: Problem): Problem {
+  const place = where ? ` (${where})` : '';
+  return new Problem(
+    'project',
+    `What the project holds cannot be used${place}: ${what}`,
+    '',
+    'Go back to a backup, or to where the file came from.',
+  );
+}
+
+/** Whether a failure says something of the disk or of other programs, and nothing of the file's content. */
+export function isOfTheDisk(error: unknown): boolean {
+  const code = String((error as { code?: unknown }).code ?? '');
+  if (code.startsWith('SQLITE_'))
+    return !/^SQLITE_(CORRUPT|NOTADB|ERROR|SCHEMA|FORMAT|CONSTRAINT|TOOBIG|RANGE|MISMATCH)/.test(code);
+  return /^E[A-Z0-9]+$/.test(code) && !code.startsWith('ERR');
 }
 
 export function damagedProblem(damage: Damage, path: string): Problem {
@@ -128,6 +148,7 @@ export async function readProjectChip(path: string): Promise<Chip> {
     }
   } catch (error) {
     if (error instanceof Problem) throw error;
+    if (isOfTheDisk(error)) throw projectProblem(error, path);
     throw damagedProblem(error instanceof Damage ? error : new Damage(['it cannot be opened']), path);
   }
 }

@@ -93,14 +93,15 @@ export class Store {
   }
 
   /** Rows one by one; the connection can do nothing else meanwhile. */
-  iterate(sql: string, ...values: Value[]): IterableIterator<Row> {
-    return step(sql, () => this.#prepare(sql).iterate(...values));
+  *iterate(sql: string, ...values: Value[]): Generator<Row> {
+    const statement = step(sql, () => this.#prepare(sql));
+    yield* statement.iterate(...values);
   }
 
   /** All of `work` or nothing of it. */
   transaction<T>(work: () => T): T {
-    this.exec('BEGIN IMMEDIATE');
     try {
+      this.exec('BEGIN IMMEDIATE');
       const result = work();
       this.exec('COMMIT');
       return result;

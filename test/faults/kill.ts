@@ -1,5 +1,5 @@
 import { type ChildProcessByStdio, spawn } from 'node:child_process';
-import { mkdtempSync, rmSync } from 'node:fs';
+import { rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { Readable, Writable } from 'node:stream';
@@ -11,6 +11,7 @@ import type { Project } from '../../db/project.ts';
 import { readProjectChip } from '../../db/read.ts';
 import { Workplace } from '../../db/workplace.ts';
 import { madeUpChip, random, whole } from './random.ts';
+import { scratchFolder } from './sample.ts';
 
 export interface KillCount {
   kills: number;
@@ -59,7 +60,7 @@ class Model {
 
 /** Kills a child that works on one project `kills` times, and looks after each kill at what is left. */
 export async function killMany(kills: number, seed: number): Promise<KillCount> {
-  const folder = mkdtempSync(join(tmpdir(), 'channelwright-kill-'));
+  const folder = scratchFolder();
   const path = join(folder, 'project.chw');
   const userData = join(folder, 'data');
   const chip = madeUpChip(30);

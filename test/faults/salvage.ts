@@ -13,14 +13,21 @@ function rowsOf(bytes: Uint8Array): Map<string, { hash: Buffer; text: string; bo
   if (!store) throw new Error('the file is not whole');
   const rows = new Map<string, { hash: Buffer; text: string; body: Buffer }>();
   for (const [table, sql] of [
-    ['chip', "SELECT kind || ' ' || json_extract(body, '$.id') AS name, body, hash FROM chip WHERE kind = 'channel'"],
+    [
+      'chip',
+      "SELECT kind || ' ' || json_extract(body, '$.id') AS name, body, hash FROM chip WHERE kind = 'channel'",
+    ],
     ['result', 'SELECT id AS name, body, hash FROM result'],
     ['trial', 'SELECT name, chip AS body, hash FROM trial'],
     ['cell', 'SELECT key AS name, body, hash FROM cell'],
   ] as const) {
     for (const row of store.all(sql)) {
       const body = Buffer.from(row.body as string);
-      rows.set(`${table} ${String(row.name)}`, { hash: row.hash as Buffer, text: body.toString('base64'), body });
+      rows.set(`${table} ${String(row.name)}`, {
+        hash: row.hash as Buffer,
+        text: body.toString('base64'),
+        body,
+      });
     }
   }
   store.close();
