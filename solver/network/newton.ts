@@ -1,13 +1,13 @@
 import { SingularMatrix } from '../sparse/singular.ts';
 import type { Imposed } from './imposed.ts';
 import { applyLaws, type DuctLaw, type LawState, lawState } from './law.ts';
-import { newtonStep } from './newton-step.ts';
+import { dependsOnDifferences, newtonStep, type StepRoom, stepRoom } from './newton-step.ts';
 import type { PreparedNetwork } from './prepare.ts';
 
 /** Imbalance of every node over what passes through it at which the pressures count as found. */
 export const CONVERGED = 1e-10;
-/** Below this there is nothing left to gain. */
-const ROUND_OFF = 1e-14;
+/** Below this another step gains nothing that counts. */
+const ROUND_OFF = 1e-12;
 /** A node is judged by at least this share of all that passes through the nodes. */
 const LEAST_SHARE = 1e-9;
 /** What the sum of all imbalances may be from round-off in the laws, over all that flows. */
@@ -28,10 +28,10 @@ export interface Search {
   readonly fine: Float64Array;
   /** Laws at these pressures. */
   state: LawState;
-  /** m³/s by which each unknown's node is judged: what passes through it. */
-  readonly passing: Float64Array;
-  /** Worst imbalance of each part, over that. */
+  /** Worst imbalance of each part, over what passes through the node. */
   readonly worst: Float64Array;
+  /** Made at the first law that asks for it. */
+  room: StepRoom | null;
   /** Newton steps taken so far. */
   steps: number;
 }
@@ -59,7 +59,9 @@ export function newton(search: Search, blend: number): boolean {
     const reached = worst.reduce((a, b) => Math.max(a, b), 0);
     if (reached <= ROUND_OFF) return true;
     try {
-      newtonStep(network, search.state, drives.left, search.passing, right, step);
+      if (search.room === null && !dependsOnDifferences(search.state)) search.room = stepRoom(network);
+      step.set(right);
+      newtonStep(network, search.state, search.room, drives.left, step);
     } catch (error) {
       if (error instanceof SingularMatrix) return false;
       throw error;
@@ -103,12 +105,11 @@ function normalise(coarse: Float64Array, fine: Float64Array, nodeOf: Int32Array)
 }
 
 /**
- * What flows into each unknown's node too much, into `right`, with what passes through each and the worst of
- * each part, into `search`.
+ * What flows into each unknown's node too much, into `right`, and the worst of it per part, into `search.worst`.
  * @returns Σ |imbalance|, m³/s
  */
 function imbalance(
-  { network, drives, passing, worst }: Search,
+  { network, drives, worst }: Search,
   { flow, size }: LawState,
   right: Float64Array,
 ): number {
@@ -134,8 +135,7 @@ function imbalance(
     right[u] = left[part] === 1 ? 0 : net[i];
     const off = Math.abs(right[u]);
     sum += off;
-    passing[u] = Math.max(around[i], LEAST_SHARE * most) / 2;
-    if (off > 0) worst[part] = Math.max(worst[part], off / passing[u]);
+    if (off > 0) worst[part] = Math.max(worst[part], (2 * off) / Math.max(around[i], LEAST_SHARE * most));
   }
   return sum;
 }

@@ -55,7 +55,7 @@ function factoriseDetermined(nodeCount: number, network: PreparedNetwork, drives
 
 /** The matrix of the unknown pressures from `network.conductance`; the identity in parts that are left out. */
 export function assemble(network: PreparedNetwork, left: Uint8Array): void {
-  const { edges, parts, nodeOf, conductance, pattern } = network;
+  const { conductance, pattern } = network;
   const { scatter, matrix } = pattern;
   const { value } = matrix;
   value.fill(0);
@@ -68,13 +68,19 @@ export function assemble(network: PreparedNetwork, left: Uint8Array): void {
     if (between >= 0) value[between] -= g;
     if (second >= 0) value[second] += g;
   }
+  leaveOut(network, left, value);
+}
+
+/** Makes the rows of parts that are left out those of the identity. */
+export function leaveOut(network: PreparedNetwork, left: Uint8Array, value: Float64Array): void {
   if (!left.includes(1)) return;
-  for (let e = 0, s = 0; e < conductance.length; e += 1, s += 3) {
-    const between = scatter[s + 1];
+  const { edges, parts, nodeOf, pattern } = network;
+  for (let e = 0; e < edges.from.length; e += 1) {
+    const between = pattern.scatter[3 * e + 1];
     if (between >= 0 && left[parts.of[edges.from[e]]] === 1) value[between] = 0;
   }
   for (let u = 0; u < nodeOf.length; u += 1) {
-    if (left[parts.of[nodeOf[u]]] === 1) value[matrix.columnStart[u]] = 1;
+    if (left[parts.of[nodeOf[u]]] === 1) value[pattern.matrix.columnStart[u]] = 1;
   }
 }
 

@@ -56,8 +56,8 @@ export function solveNonlinear(
     coarse,
     fine,
     state: lawState(linear.length),
-    passing: new Float64Array(nodeOf.length),
     worst: new Float64Array(parts.count),
+    room: null,
     steps: 0,
   };
   for (let u = 0; start !== undefined && u < nodeOf.length; u += 1) {

@@ -1,18 +1,22 @@
 /**
- * C ← C − X Yᵀ, the update of a block of L by one before it.
+ * C ← C − X Yᵀ, the update of a block of a factor by one before it.
  *
  * X are the rows `first` … `height`−1 of the earlier panel, Y its rows `first` … `last`−1, the ones that fall
  * on columns of the later block. The product goes straight to its place in the later panel, in tiles of
  * 3 × 2 (what the registers of scalar code hold). A tile that pokes above the diagonal of the later block
  * writes there too: nothing reads that part.
  *
- * @param panels all panels
+ * @param target the panels that hold C
+ * @param x the panels that hold X; may be the same
+ * @param y the panels that hold Y; may be the same
  * @param from start of the earlier panel, `width` wide
  * @param rowStart where the earlier block's rows start in `rows`
  * @param place for each row its start in the later panel less the later block's first column
  */
 export function blockUpdate(
-  panels: Float64Array,
+  target: Float64Array,
+  x: Float64Array,
+  y: Float64Array,
   from: number,
   width: number,
   rows: Int32Array,
@@ -40,40 +44,40 @@ export function blockUpdate(
       let s20 = 0;
       let s21 = 0;
       for (let k = 0; k < width; k += 1) {
-        const u = panels[y0 + k];
-        const v = panels[y1 + k];
-        const a = panels[x0 + k];
+        const u = y[y0 + k];
+        const v = y[y1 + k];
+        const a = x[x0 + k];
         s00 += a * u;
         s01 += a * v;
-        const b = panels[x1 + k];
+        const b = x[x1 + k];
         s10 += b * u;
         s11 += b * v;
-        const c = panels[x2 + k];
+        const c = x[x2 + k];
         s20 += c * u;
         s21 += c * v;
       }
       const t0 = place[rows[rowStart + i]];
       const t1 = place[rows[rowStart + i + 1]];
       const t2 = place[rows[rowStart + i + 2]];
-      panels[t0 + c0] -= s00;
-      panels[t0 + c1] -= s01;
-      panels[t1 + c0] -= s10;
-      panels[t1 + c1] -= s11;
-      panels[t2 + c0] -= s20;
-      panels[t2 + c1] -= s21;
+      target[t0 + c0] -= s00;
+      target[t0 + c1] -= s01;
+      target[t1 + c0] -= s10;
+      target[t1 + c1] -= s11;
+      target[t2 + c0] -= s20;
+      target[t2 + c1] -= s21;
     }
     for (; i < height; i += 1) {
       const x0 = from + i * width;
       let s0 = 0;
       let s1 = 0;
       for (let k = 0; k < width; k += 1) {
-        const a = panels[x0 + k];
-        s0 += a * panels[y0 + k];
-        s1 += a * panels[y1 + k];
+        const a = x[x0 + k];
+        s0 += a * y[y0 + k];
+        s1 += a * y[y1 + k];
       }
       const t0 = place[rows[rowStart + i]];
-      panels[t0 + c0] -= s0;
-      panels[t0 + c1] -= s1;
+      target[t0 + c0] -= s0;
+      target[t0 + c1] -= s1;
     }
   }
   if (j === last) return;
@@ -83,8 +87,8 @@ export function blockUpdate(
   for (let i = j; i < height; i += 1) {
     const x0 = from + i * width;
     let s0 = 0;
-    for (let k = 0; k < width; k += 1) s0 += panels[x0 + k] * panels[y0 + k];
+    for (let k = 0; k < width; k += 1) s0 += x[x0 + k] * y[y0 + k];
     const t0 = place[rows[rowStart + i]];
-    panels[t0 + c0] -= s0;
+    target[t0 + c0] -= s0;
   }
 }

@@ -5,8 +5,9 @@ export function powerLaw(r: number, n: number, at: number): DuctLaw {
   return {
     flow(drop, _to, out) {
       const x = Math.abs(drop) / at;
-      out[0] = (at / r) * Math.sign(drop) * x ** (1 / n);
-      out[1] = x ** (1 / n - 1) / (n * r);
+      const slope = x ** (1 / n - 1) / r;
+      out[0] = slope * drop;
+      out[1] = slope / n;
       out[2] = -out[1];
     },
   };
@@ -26,8 +27,9 @@ export function cassonTube(r: number, yieldDrop: number): DuctLaw {
       }
       const xi = yieldDrop / size;
       const root = Math.sqrt(xi);
-      out[0] = (drop / r) * (1 - (16 / 7) * root + (4 / 3) * xi - xi ** 4 / 21);
-      out[1] = (1 - (8 / 7) * root + xi ** 4 / 7) / r;
+      const fourth = xi * xi * xi * xi;
+      out[0] = (drop / r) * (1 - (16 / 7) * root + (4 / 3) * xi - fourth / 21);
+      out[1] = (1 - (8 / 7) * root + fourth / 7) / r;
       out[2] = -out[1];
     },
   };
@@ -43,8 +45,8 @@ export function softRoof(r: number, b: number): DuctLaw {
       const second = 1 + b * to;
       const first = second + b * drop;
       out[0] = (drop * (first + second) * (first * first + second * second)) / (4 * r);
-      out[1] = first ** 3 / r;
-      out[2] = -(second ** 3) / r;
+      out[1] = (first * first * first) / r;
+      out[2] = (-second * second * second) / r;
     },
   };
 }
