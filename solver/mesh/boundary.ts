@@ -1,6 +1,7 @@
 import { Problem } from '../problem/problem.ts';
 import { type Curve, curveOf, directionAt, pointAt } from './arc.ts';
-import { type EdgeWish, gapWishes } from './gaps.ts';
+import { type EdgeWish, relaxed, wishAt } from './edge-wish.ts';
+import { gapWishes } from './gaps.ts';
 import type { Shape } from './mesh.ts';
 import type { FullSizing } from './sizing.ts';
 
@@ -69,7 +70,7 @@ export function cutBoundary(shape: Shape, sizing: FullSizing, extra: readonly Ed
   for (let e = 0; e < total; e += 1) {
     const curve = curves[e];
     const f = following[e];
-    const wished = wishesOf[e];
+    const wished = relaxed(wishesOf[e], sizing.growth * curve.length);
     const tip0 = corner.tip[e];
     const tip1 = corner.tip[f];
     const wanted = (t: number): number => {
@@ -84,9 +85,7 @@ export function cutBoundary(shape: Shape, sizing: FullSizing, extra: readonly Ed
         s,
         tip1 ? cone(corner.cone[f], tip1, d1, sizing.growth) : vertexSize[f] + sizing.growth * d1,
       );
-      for (const wish of wished) {
-        s = Math.min(s, wish.size + sizing.growth * Math.abs(t - wish.t) * curve.length);
-      }
+      s = Math.min(s, wishAt(wished, t, sizing.growth * curve.length));
       if (sizing.points.length > 0) {
         pointAt(curve, t, point);
         for (const at of sizing.points) {

@@ -3,7 +3,7 @@ import { curveOf, twiceSegmentArea } from './arc.ts';
 import type { Edge, Shape } from './mesh.ts';
 
 /** Vertices closer than this share of the shape's extent are one. */
-const COINCIDENT = 1e-9;
+const COINCIDENT = 1e-7;
 const REMEDY = 'Give an outline that encloses an area and does not touch itself.';
 
 /**

@@ -1,17 +1,14 @@
 import { type Curve, directionAt, nearestShare, pointAt } from './arc.ts';
+import type { EdgeWish } from './edge-wish.ts';
 import { Grid } from './grid.ts';
-
-/** A wished edge length at the share `t` of the boundary edge `edge`. */
-export interface EdgeWish {
-  readonly edge: number;
-  readonly t: number;
-  readonly size: number;
-}
 
 /** Up to this many edges, all pairs are looked at; beyond, only those near by the edges' own sizes. */
 const ALL_PAIRS = 200;
 /** Walls that face each other less than this do not make a gap (cosine). */
 const FACING = 0.15;
+/** Places to look from are at most about this many wished sizes apart. */
+const WIDE_SIGHT = 2;
+const MOST_HALVINGS = 14;
 
 /**
  * Where walls face each other across the fluid closer than `across` times their edge lengths: at a
@@ -34,9 +31,8 @@ export function gapWishes(
   let [edge, share, nx, ny, reach] = [0, 0, 0, 0, 0];
 
   const look = (other: number): void => {
-    if (other === edge || previous[other] === edge || previous[edge] === other) return;
-    // A vertex lies on the edge before as well.
-    if (share === 0 && previous[previous[edge]] === other) return;
+    // A vertex lies on both of its edges; other places make no gap with either neighbour.
+    if (other === edge || other === previous[edge] || (share > 0 && previous[other] === edge)) return;
     const curve = curves[other];
     const t = nearestShare(curve, p[0], p[1]);
     pointAt(curve, t, q);
@@ -53,25 +49,40 @@ export function gapWishes(
     if (gap < across * size[other]) wishes.push({ edge: other, t, size: gap / across });
   };
 
+  /** Looks from the share t of the edge; returns the least size wished there. */
+  const lookFrom = (curve: Curve, t: number, direction: number): number => {
+    const before = wishes.length;
+    share = t;
+    pointAt(curve, t, p);
+    // Inward is left of the direction of travel.
+    nx = -Math.sin(direction);
+    ny = Math.cos(direction);
+    reach = across * (grid ? size[edge] : largest);
+    if (grid) grid.near(p[0] - reach, p[1] - reach, p[0] + reach, p[1] + reach, look);
+    else for (let other = 0; other < count; other += 1) look(other);
+    let least = Number.POSITIVE_INFINITY;
+    for (let i = before; i < wishes.length; i += 1) {
+      if (wishes[i].edge === edge) least = Math.min(least, wishes[i].size);
+    }
+    return least;
+  };
+  /** Between two places, closer together the narrower the gap: growth must not bridge it unseen. */
+  const between = (curve: Curve, from: number, to: number, depth: number): void => {
+    const middle = (from + to) / 2;
+    const wish = lookFrom(curve, middle, directionAt(curve, middle));
+    if ((to - from) * curve.length < WIDE_SIGHT * wish || depth === MOST_HALVINGS) return;
+    between(curve, from, middle, depth + 1);
+    between(curve, middle, to, depth + 1);
+  };
+
   for (edge = 0; edge < count; edge += 1) {
     const curve = curves[edge];
-    const before = curves[previous[edge]];
+    // At a vertex, halfway between its two edges.
+    const leaving = directionAt(curve, 0);
+    const turn = directionAt(curves[previous[edge]], 1) - leaving;
+    lookFrom(curve, 0, leaving + Math.atan2(Math.sin(turn), Math.cos(turn)) / 2);
     const samples = grid ? 1 : Math.min(8, Math.max(1, Math.round(curve.length / (2 * size[edge]))));
-    for (let k = 0; k <= samples; k += 1) {
-      share = k === 0 ? 0 : (k - 0.5) / samples;
-      pointAt(curve, share, p);
-      // Inward is left of the direction of travel; at a vertex, halfway between its two edges.
-      let direction = directionAt(curve, share);
-      if (k === 0) {
-        const arriving = directionAt(before, 1);
-        direction = arriving + Math.atan2(Math.sin(direction - arriving), Math.cos(direction - arriving)) / 2;
-      }
-      nx = -Math.sin(direction);
-      ny = Math.cos(direction);
-      reach = across * (grid ? size[edge] : largest);
-      if (grid) grid.near(p[0] - reach, p[1] - reach, p[0] + reach, p[1] + reach, look);
-      else for (let other = 0; other < count; other += 1) look(other);
-    }
+    for (let k = 0; k < samples; k += 1) between(curve, k / samples, (k + 1) / samples, 0);
   }
   return wishes;
 }

@@ -2,7 +2,7 @@ import { Problem } from '../problem/problem.ts';
 import { type Boundary, cutBoundary, tooFine } from './boundary.ts';
 import { checkShape } from './check-shape.ts';
 import { crossingPlace } from './crossing.ts';
-import type { EdgeWish } from './gaps.ts';
+import type { EdgeWish } from './edge-wish.ts';
 import type { Mesh, Shape } from './mesh.ts';
 import { canonicalPose } from './pose.ts';
 import { quadraticMesh, turnOver } from './quadratic.ts';

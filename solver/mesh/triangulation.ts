@@ -70,7 +70,20 @@ function grown(array: Float64Array): Float64Array {
  * null where the boundary crosses or touches itself.
  */
 export function triangulateBoundary(boundary: Boundary): Triangulation | null {
-  const { count, x, y, next } = boundary;
+  for (const turn of TURNS) {
+    const found = triangulateTurned(boundary, Math.cos(turn), Math.sin(turn));
+    if (found) return found;
+  }
+  return null;
+}
+
+/** Vertices next to each other may defeat the triangulation by rounding; turned, they hardly do so again. */
+const TURNS = [0, 0.7, 1.9];
+
+function triangulateTurned(boundary: Boundary, cos: number, sin: number): Triangulation | null {
+  const { count, next } = boundary;
+  const x = boundary.x.map((value, i) => cos * value - sin * boundary.y[i]);
+  const y = boundary.y.map((value, i) => cos * value + sin * boundary.x[i]);
   const coordinates = new Float64Array(2 * count + 8);
   let [x0, y0, x1, y1] = [Infinity, Infinity, -Infinity, -Infinity];
   for (let i = 0; i < count; i += 1) {
