@@ -33,4 +33,20 @@ export const NOT_CHECKED: readonly NotChecked[] = [
     what: 'Whole blood in channels below about 0.3 mm',
     why: 'Blood is no continuum of one viscosity there; no model of the cell-free layer is part of the program.',
   },
+  {
+    what: 'Laws of cell damage and reference limits of wall shear',
+    why: 'They are evaluated as published and shown with their source; published laws differ a hundredfold on the same exposure, and no limit holds for cells that were not tried.',
+  },
+  {
+    what: 'Constants of the entrance length',
+    why: 'From memory of their source; they raise a finding, no flow depends on them.',
+  },
+  {
+    what: 'Default design rules and fabrication tolerances',
+    why: 'Common practice without one source; the rules of the maker of the chip replace them.',
+  },
+  {
+    what: 'Bulging roofs between thin plates and thick ones, and under suction near the floor',
+    why: 'The two laws are checked each in its own range; what lies between has no published formula here.',
+  },
 ];

@@ -33,6 +33,28 @@ function groups(table: Table): Map<string, CheckedRow[]> {
   return found;
 }
 
+interface Overview {
+  readonly quantity: string;
+  readonly checks: number;
+  readonly kinds: string;
+  readonly failed: number;
+  /** Of the row that came closest to its tolerance. */
+  readonly thinnest: CheckedRow;
+}
+
+/** One line per quantity: how often and how it was checked, and its thinnest margin. */
+function overview(table: Table): Overview[] {
+  const used = (row: CheckedRow): number =>
+    row.error === null ? Number.POSITIVE_INFINITY : row.margin === null ? 0 : 1 / row.margin;
+  return [...groups(table)].map(([quantity, rows]) => ({
+    quantity,
+    checks: rows.length,
+    kinds: [...new Set(rows.map(({ check }) => check))].join(', '),
+    failed: rows.filter(({ passed }) => !passed).length,
+    thinnest: rows.reduce((a, b) => (used(b) > used(a) ? b : a)),
+  }));
+}
+
 function verdict(table: Table): string {
   const rows = `${table.rows.length} checks ran on ${groups(table).size} quantities`;
   return table.failed === 0 ? `${rows}; all passed.` : `${rows}; ${table.failed} FAILED.`;
@@ -68,6 +90,14 @@ export function markdown(table: Table): string {
       return line(row.quantity, row.at, number(row.error), number(row.tolerance), margin(row));
     }),
     '',
+    '## Quantities',
+    '',
+    line('quantity', 'checks', 'kinds', 'thinnest margin', 'failed'),
+    rule(5),
+    ...overview(table).map(({ quantity, checks, kinds, thinnest, failed }) =>
+      line(quantity, String(checks), kinds, margin(thinnest), String(failed)),
+    ),
+    '',
     '## Not checked',
     '',
     ...table.notChecked.map(({ what, why }) => `- **${what}.** ${why}`),
@@ -93,7 +123,7 @@ const STYLE = `
 body { margin: 0 auto; max-width: 74rem; padding: 2rem 1.5rem 4rem; color: var(--ink); background: var(--paper); font: 15px/1.5 system-ui, sans-serif; }
 h1 { font-size: 1.7rem; margin: 0 0 .4rem; } h2 { font-size: 1.2rem; margin: 2.4rem 0 .6rem; } h3 { font-size: 1rem; margin: 1.8rem 0 .3rem; }
 p, li { max-width: 48rem; } .soft { color: var(--soft); }
-.wide { overflow-x: auto; }
+.wide { overflow-x: auto; } a { color: inherit; }
 table { border-collapse: collapse; width: 100%; font-size: .88rem; }
 th, td { text-align: left; vertical-align: top; padding: .3rem .7rem .3rem 0; border-bottom: 1px solid var(--line); }
 th { font-weight: 600; color: var(--soft); } td.n, th.n { text-align: right; font-variant-numeric: tabular-nums; white-space: nowrap; }
@@ -124,7 +154,7 @@ export function html(table: Table): string {
   const sections: string[] = [];
   for (const [quantity, rows] of groups(table)) {
     sections.push(
-      `<h3>${plain(quantity)}</h3>`,
+      `<h3 id="q${sections.length / 2}">${plain(quantity)}</h3>`,
       grid(
         ['case', 'check', 'source', 'error', 'tolerance', 'margin', 'result'],
         rows.map((row) => cells([row.at, row.check, row.source], figures(row), outcome(row))),
@@ -160,6 +190,16 @@ ${grid(
     return cells([row.quantity, row.at], figures(row));
   }),
 )}
+<h2>Quantities</h2>
+${grid(
+  ['quantity', 'kinds', 'checks', 'margin', 'result'],
+  overview(table).map(
+    ({ quantity, checks, kinds, thinnest, failed }, k) =>
+      `<tr><td><a href="#q${k}">${plain(quantity)}</a></td><td>${kinds}</td><td class="n">${checks}</td><td class="n">${plain(
+        margin(thinnest),
+      )}</td>${failed === 0 ? '<td class="good">passed</td>' : `<td class="bad">${failed} failed</td>`}</tr>`,
+  ),
+)}
 <h2>Not checked</h2>
 <ul>
 ${table.notChecked.map(({ what, why }) => `<li><b>${plain(what)}.</b> ${plain(why)}</li>`).join('\n')}
@@ -171,4 +211,4 @@ ${sections.join('\n')}
 `;
 }
 
-const NUMERIC = new Set(['error', 'tolerance', 'margin']);
+const NUMERIC = new Set(['error', 'tolerance', 'margin', 'checks']);

@@ -27,7 +27,7 @@ const fresh = mkdtempSync(join(tmpdir(), 'channelwright-verify-'));
 
 // Only files that use `verify` can record rows; the others would cost time and say nothing.
 const files = globSync(['{solver,db,main,renderer}/**/*.test.{ts,tsx}', 'test/**/*.test.ts'], { cwd: root })
-  .filter((file) => /\/row\.ts'/.test(readFileSync(join(root, file), 'utf8')))
+  .filter((file) => /^import .*\bverify\b.*\/row\.ts';$/m.test(readFileSync(join(root, file), 'utf8')))
   .sort();
 
 const run = spawnSync(

@@ -59,9 +59,14 @@ test('pages carry every row, every gap, no script, and no markup of the text', (
   expect(page).toContain('A &amp; B &quot;C&quot;');
   expect(page).not.toMatch(/<script|<b>\|/);
   expect(page.match(/class="bad">failed/g)).toHaveLength(1);
+  expect(page.match(/class="bad">1 failed/g)).toHaveLength(1);
   const text = markdown(table);
   expect(text).toContain('flow <b>\\|x');
   expect(text).toContain('1 FAILED');
+  // Every line of the overview leads to the checks of its quantity.
+  const links = [...page.matchAll(/href="#(q\d+)"/g)].map(([, id]) => id);
+  expect(links).toHaveLength(2);
+  for (const id of links) expect(page.split(`id="${id}"`)).toHaveLength(2);
   for (const { what } of NOT_CHECKED) {
     expect(page).toContain(what.replaceAll('"', '&quot;').replaceAll('&', '&amp;'));
     expect(text).toContain(what);
