@@ -30,6 +30,9 @@ export interface Search {
   state: LawState;
   /** Worst imbalance of each part, over what passes through the node. */
   readonly worst: Float64Array;
+  /** m³/s per node, scratch: what flows in less what flows out, and all of both. */
+  readonly net: Float64Array;
+  readonly around: Float64Array;
   /** Made at the first law that asks for it. */
   room: StepRoom | null;
   /** Newton steps taken so far. */
@@ -56,7 +59,7 @@ export function newton(search: Search, blend: number): boolean {
   }
   let sum = imbalance(search, search.state, right);
   for (let k = 0; k < STEPS_MOST; k += 1) {
-    const reached = worst.reduce((a, b) => Math.max(a, b), 0);
+    const reached = largest(worst);
     if (reached <= ROUND_OFF) return true;
     try {
       if (search.room === null && !dependsOnDifferences(search.state)) search.room = stepRoom(network);
@@ -67,7 +70,8 @@ export function newton(search: Search, blend: number): boolean {
       throw error;
     }
     before.set(fine);
-    const noise = LAW_ROUND_OFF * search.state.size.reduce((total, q) => total + q, 0);
+    let noise = 0;
+    for (let e = 0; e < linear.length; e += 1) noise += LAW_ROUND_OFF * search.state.size[e];
     let accepted = false;
     let tried = 0;
     for (let size = 1; !accepted && size > SMALLEST_SHARE; size /= 2) {
@@ -77,7 +81,7 @@ export function newton(search: Search, blend: number): boolean {
       accepted = tried <= (1 - 1e-4 * size) * sum || tried <= noise;
     }
     search.steps += 1;
-    const now = worst.reduce((a, b) => Math.max(a, b), 0);
+    const now = largest(worst);
     if (!accepted || (reached <= CONVERGED && now > reached)) {
       fine.set(before);
       imbalance(search, search.state, right);
@@ -91,6 +95,12 @@ export function newton(search: Search, blend: number): boolean {
     if (reached <= CONVERGED && now > reached / 2) return true;
   }
   return worst.every((w) => w <= CONVERGED);
+}
+
+function largest(values: Float64Array): number {
+  let most = 0;
+  for (let i = 0; i < values.length; i += 1) most = Math.max(most, values[i]);
+  return most;
 }
 
 /** Moves what coarse can hold out of fine, without rounding. */
@@ -109,15 +119,15 @@ function normalise(coarse: Float64Array, fine: Float64Array, nodeOf: Int32Array)
  * @returns Σ |imbalance|, m³/s
  */
 function imbalance(
-  { network, drives, worst }: Search,
+  { network, drives, worst, net, around }: Search,
   { flow, size }: LawState,
   right: Float64Array,
 ): number {
   const { edges, parts, nodeOf } = network;
   const { from, to } = edges;
   const { injected, left } = drives;
-  const net = injected.slice();
-  const around = injected.map(Math.abs);
+  net.set(injected);
+  for (let i = 0; i < around.length; i += 1) around[i] = Math.abs(injected[i]);
   let most = 0;
   for (let e = 0; e < flow.length; e += 1) {
     const q = flow[e];

@@ -57,6 +57,8 @@ export function solveNonlinear(
     fine,
     state: lawState(linear.length),
     worst: new Float64Array(parts.count),
+    net: new Float64Array(edges.nodes),
+    around: new Float64Array(edges.nodes),
     room: null,
     steps: 0,
   };

@@ -5,6 +5,8 @@ import { Session } from '../../solver/session.ts';
 import { solve } from '../../solver/solve.ts';
 import { type BenchRow, timed } from './row.ts';
 
+const IDEAL = { junctions: 'ideal' } as const;
+
 /** A lattice of about `count` channels, each from one crossing to the next, as a description. */
 function lattice(count: number): string {
   const side = Math.ceil(Math.sqrt(count / 2));
@@ -67,7 +69,7 @@ export default async function bench(): Promise<BenchRow[]> {
   const parsed = readDescription(small);
   rows.push({
     what: 'description read to result, 10,000 channels',
-    median: timed(() => solve(parsed), 5),
+    median: timed(() => solve(parsed, IDEAL), 5),
     unit: 'ms',
     runs: 5,
   });
@@ -78,7 +80,7 @@ export default async function bench(): Promise<BenchRow[]> {
     () => {
       chip = widened(chip, step);
       step += 1;
-      session.update(chip);
+      session.update(chip, IDEAL);
     },
     501,
     400,

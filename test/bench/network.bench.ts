@@ -114,7 +114,7 @@ export default async function bench(): Promise<BenchRow[]> {
     .map(Number);
   rows.push(
     {
-      what: 'grid of 1e6 channels, cold, first call of a process',
+      what: 'grid of 1e6 channels, cold, first call of a process, processor time',
       median: ms,
       unit: 'ms',
       runs: 1,
