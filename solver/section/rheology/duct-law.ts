@@ -57,9 +57,8 @@ export interface DuctLaws {
 export function ductLaws(rheology: Rheology): DuctLaws {
   const locals = new Map<string, LocalFlow>();
   const tapers = new Map<string, RigidTaper>();
-  const keyOf = (profile: Profile, depth: number): string => `${JSON.stringify(profile)} ${depth}`;
   const localOf = (profile: Profile, width: number, depth: number, where: string): LocalFlow =>
-    remembered(locals, `${keyOf(profile, depth)} ${width}`, () =>
+    remembered(locals, `${profileKey(profile)} ${depth} ${width}`, () =>
       localFlow(rheology, profile, width, depth, where),
     );
   return {
@@ -68,18 +67,33 @@ export function ductLaws(rheology: Rheology): DuctLaws {
       if (!(length > 0)) throw new RangeError(`duct of length ${length}`);
       const at = (w: number): LocalFlow => localOf(profile, w, depth, where);
       if (roof) return softDuct(rheology, shape, at, (w) => roofLaw(roof, w, depth, where));
-      const taper = remembered(tapers, `${keyOf(profile, depth)} ${width}`, () => rigidTaper(width, at));
+      const taper = remembered(tapers, `${profileKey(profile)} ${depth} ${width}`, () =>
+        rigidTaper(width, at),
+      );
       return rigidDuct(taper, length);
     },
   };
 }
 
+/** More different sections than a chip has, less than memory minds. */
+const MOST_KEPT = 5000;
+
 function remembered<T>(kept: Map<string, T>, key: string, make: () => T): T {
   const known = kept.get(key);
   if (known !== undefined) return known;
   const made = make();
+  if (kept.size >= MOST_KEPT) kept.clear();
   kept.set(key, made);
   return made;
+}
+
+const profileKeys = new WeakMap<Profile, string>();
+
+/** A measured outline may have thousands of points: its text is made once. */
+function profileKey(profile: Profile): string {
+  const key = profileKeys.get(profile) ?? JSON.stringify(profile);
+  profileKeys.set(profile, key);
+  return key;
 }
 
 /** Shear rate of an ordinary channel, 1/s. */

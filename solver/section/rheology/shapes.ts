@@ -32,6 +32,8 @@ type Etched = Exclude<Profile, { kind: 'polygon' }>;
 const ASPECT_STEP = 0.25;
 /** Flatter or steeper than e^±4, triangles and ellipses keep their flow per wall stress: the last table serves. */
 const LAST_STEP = 16;
+/** Tables kept; one holds a few hundred kilobytes. */
+const MOST_KEPT = 200;
 /** Cells over the half depth of a rectangle. */
 const ACROSS = 8;
 
@@ -41,6 +43,7 @@ export function shapeTables(fluid: ScaledFluid): ShapeTables {
     const known = kept.get(key);
     if (known) return known;
     const made = make();
+    if (kept.size >= MOST_KEPT) kept.clear();
     kept.set(key, made);
     return made;
   };
