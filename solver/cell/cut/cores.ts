@@ -109,10 +109,14 @@ function overlaps(chip: Chip, drawing: Drawing, found: Sources): void {
       const p = drawing.body(i);
       const q = drawing.body(j);
       if (a === b && sameBend(p, q)) continue;
-      const smooth = a !== b && goesOn(p, q, drawing);
-      const source = addSource(found, smooth);
+      const joint = jointOf(p, q, drawing);
+      if (joint) {
+        endOnEnd(found, chip, drawing, joint);
+        continue;
+      }
+      const source = addSource(found);
       const corners = commonCorners(p, q);
-      const margin = smooth ? 0 : filletReach(chip, drawing, p, q);
+      const margin = filletReach(chip, drawing, p, q);
       span(found, p, corners, source, margin);
       span(found, q, corners, source, margin);
     }
@@ -148,17 +152,41 @@ function span(
   }
 }
 
-/** Whether two channels end on each other and go straight on, alike in width. */
-function goesOn(p: Body, q: Body, drawing: Drawing): boolean {
-  for (const atP of ends(p, drawing)) {
-    for (const atQ of ends(q, drawing)) {
-      if (Math.hypot(atP.x - atQ.x, atP.y - atQ.y) > 2 * TOUCH) continue;
-      const turn = Math.atan2(-(atP.ux * atQ.uy - atP.uy * atQ.ux), -(atP.ux * atQ.ux + atP.uy * atQ.uy));
-      if (Math.abs(turn) > BEND_TURN) return false;
-      return Math.abs(atP.half - atQ.half) <= STEP * Math.max(atP.half, atQ.half);
-    }
+/** Two ends of channels at one point. */
+interface Joint {
+  readonly p: End;
+  readonly q: End;
+}
+
+function jointOf(p: Body, q: Body, drawing: Drawing): Joint | undefined {
+  for (const a of ends(p, drawing)) {
+    for (const b of ends(q, drawing))
+      if (Math.hypot(a.x - b.x, a.y - b.y) <= 2 * TOUCH) return { p: a, q: b };
   }
-  return false;
+  return undefined;
+}
+
+/**
+ * Channels that end on each other: as far along each as to where its wall meets the other's, fillet
+ * included; where they go straight on and are alike in width, a joint that needs no cell of its own.
+ */
+function endOnEnd(found: Sources, chip: Chip, drawing: Drawing, { p, q }: Joint): void {
+  const { fillet } = chip.layers[drawing.layerOf[p.channel]!]!;
+  const cosine = p.ux * q.ux + p.uy * q.uy;
+  const sine = Math.abs(p.ux * q.uy - p.uy * q.ux);
+  const turn = Math.atan2(sine, -cosine);
+  const step = Math.abs(p.half - q.half) > STEP * Math.max(p.half, q.half);
+  const source = addSource(found, turn <= BEND_TURN && !step);
+  for (const [own, other] of [
+    [p, q],
+    [q, p],
+  ] as const) {
+    const corner = turn <= BEND_TURN ? 0 : Math.max(0, (other.half + own.half * cosine) / sine);
+    const rounding = turn <= BEND_TURN ? (step ? fillet : 0) : fillet * Math.tan(turn / 2);
+    const reach = Math.min(corner + rounding, own.room);
+    const [low, high] = own.atStart ? [0, reach] : [own.total - reach, own.total];
+    found.cores.push({ channel: own.channel, low, high, source });
+  }
 }
 
 interface End {
@@ -168,16 +196,24 @@ interface End {
   readonly ux: number;
   readonly uy: number;
   readonly half: number;
+  readonly channel: number;
+  readonly atStart: boolean;
+  /** Length of the channel, and of the element there. */
+  readonly total: number;
+  readonly room: number;
 }
 
 function ends(b: Body, drawing: Drawing): End[] {
   const e = b.element;
   const c = e.curve;
+  const { channel } = e;
+  const total = drawing.elements.total(channel);
+  const common = { channel, total, room: c.length };
   const list: End[] = [];
-  if (e.index === 0) list.push({ x: c.x0, y: c.y0, ux: c.ux, uy: c.uy, half: e.h0 });
-  if (e.index === drawing.elements.first[e.channel + 1]! - drawing.elements.first[e.channel]! - 1) {
+  if (e.s0 === 0) list.push({ ...common, x: c.x0, y: c.y0, ux: c.ux, uy: c.uy, half: e.h0, atStart: true });
+  if (e.s1 === total) {
     const [ux, uy] = tangentAt(c, c.length);
-    list.push({ x: c.x1, y: c.y1, ux: -ux, uy: -uy, half: e.h1 });
+    list.push({ ...common, x: c.x1, y: c.y1, ux: -ux, uy: -uy, half: e.h1, atStart: false });
   }
   return list;
 }
