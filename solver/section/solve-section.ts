@@ -133,6 +133,9 @@ export function solveOn(shape: SectionShape, mesh: Mesh): Solved {
   const mean = shape.area / shape.perimeter;
   const peakError = peak ? (2 * peak.doubt) / peak.shear : 0;
   const shearError = Math.max(peakError, (2 * floor.doubt) / mean, (2 * side.doubt) / mean);
+  // Averaging lowers a peak by about the square of its length: seen by half the length.
+  const half = peak && shape.averaged > 0 ? peakOf(averageCurve(wholeCurve, shape.averaged / 2)).shear : 0;
+  const averaging = peak && half > 0 ? (2 * Math.abs(half - peak.shear)) / peak.shear : 0;
   const meshError = (flow.upper - flow.lower) / (flow.upper + flow.lower) + geometry;
   return {
     unit: {
@@ -144,7 +147,7 @@ export function solveOn(shape: SectionShape, mesh: Mesh): Solved {
       floorShear: floor.shear,
       sideShear: side.shear,
       error: meshError + (shape.moved * squareOf(wholeCurve)) / conductance,
-      shearError,
+      shearError: shearError + averaging,
       wall: curvePoints(curve),
     },
     meshError,
