@@ -1,7 +1,9 @@
+import { useMemo } from 'react';
 import type { Channel, Chip } from '../../solver/chip/chip.ts';
 import type { ChannelResult } from '../../solver/chip/result.ts';
 import { pathLength } from '../geometry/path.ts';
 import { usePage } from '../page/context.tsx';
+import { shown } from '../sheet/overlay.ts';
 import { useStore } from '../state/store.ts';
 import { placeName } from '../verdict/answer.ts';
 import { figure, lengthFigure } from '../words/figure.ts';
@@ -24,6 +26,7 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
   const put = (change: Partial<Channel>, label: string): string | null =>
     desk.attempt({ label, put: [{ kind: 'channel', value: { ...channel, ...change } }] });
   const nm = (metres: number): number => Math.round(metres * 1e9);
+  const ramp = useMemo(() => shown('wall shear', chip, result), [chip, result]);
   const tapered = channel.width[0] !== channel.width[1];
   const length = pathLength(channel.path, channel.bendRadius);
   const widest = solved?.pieces.reduce((a, b) => ((b.peakWallShear ?? 0) > (a.peakWallShear ?? 0) ? b : a));
@@ -40,6 +43,7 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
           width={Math.min(...channel.width)}
           flow={widest?.flow ?? null}
           viscosity={result?.fluid.viscosity ?? null}
+          most={ramp.to}
         />
       )}
       <div className="fields">

@@ -1,99 +1,118 @@
+import { useEffect, useMemo, useReducer } from 'react';
 import type { Layer } from '../../solver/chip/chip.ts';
+import { unitInPrint } from '../../solver/chip/units-format.ts';
+import { perimeterCurve } from '../../solver/section/perimeter-curve.ts';
 import { sectionOf } from '../../solver/section/section-of.ts';
-import { figure } from '../words/figure.ts';
-import { outlineOf } from './section-outline.ts';
+import { amount } from '../look/ramp.ts';
+import { onTheme, scheme } from '../look/theme.ts';
+import { figure, figureIn, unitFor } from '../words/figure.ts';
+import { type Band, bandsOf } from './shear-bands.ts';
 
-const WIDE = 300;
-const HIGH = 150;
+const WIDE = 312;
+const HIGH = 156;
 /** px that the largest wall shear reaches outward. */
 const REACH = 20;
 
-/**
- * The cross-section with the wall shear drawn outward from its wall, to one scale; figures where it is
- * read: roof and floor, and the side.
- */
-export function SectionPicture({
-  layer,
-  width,
-  flow,
-  viscosity,
-}: {
+export interface SectionPictureProps {
   readonly layer: Layer;
   /** nm */
   readonly width: number;
   readonly flow: number | null;
   readonly viscosity: number | null;
-}) {
+  /** Wall shear at the end of the ramp, Pa. */
+  readonly most: number;
+}
+
+/**
+ * The cross-section with the wall shear drawn outward from its wall, in the colours of the sheet; figures
+ * where it is read: roof and floor, and the side.
+ */
+export function SectionPicture({ layer, width, flow, viscosity, most }: SectionPictureProps) {
+  const [, again] = useReducer((n: number) => n + 1, 0);
+  useEffect(() => onTheme(again), []);
   const wide = width / 1e9;
   const depth = layer.depth / 1e9;
-  let section: ReturnType<typeof sectionOf>;
-  try {
-    section = sectionOf(layer.profile, wide, depth);
-  } catch (error) {
-    return <p className="soft">{error instanceof Error ? error.message : 'This section cannot be drawn.'}</p>;
-  }
+  const made = useMemo(() => {
+    try {
+      return {
+        section: sectionOf(layer.profile, wide, depth),
+        curve: perimeterCurve(layer.profile, wide, depth),
+      };
+    } catch (error) {
+      return error instanceof Error ? error.message : 'This section cannot be drawn.';
+    }
+  }, [layer.profile, wide, depth]);
+  if (typeof made === 'string') return <p className="fault">{made}</p>;
+  const { section, curve } = made;
+  // newtonian: the shear per driving gradient is the section's own
   const gradient =
     flow === null || viscosity === null ? null : (viscosity * Math.abs(flow)) / section.conductance;
-  const scale = Math.min((WIDE - 96) / section.width, (HIGH - 2 * REACH - 34) / section.depth);
-  const outline = outlineOf(layer.profile, wide, depth);
-  const x = (m: number): number => WIDE / 2 + m * scale;
+  const scale = Math.min((WIDE - 128) / section.width, (HIGH - 2 * REACH - 40) / section.depth);
+  const left = WIDE / 2 - 16;
+  const middle = (Math.max(...curve.x) + Math.min(...curve.x)) / 2;
+  const x = (m: number): number => left + (m - middle) * scale;
   const y = (m: number): number => HIGH / 2 - 8 + (section.depth / 2 - m) * scale;
-  const shear = (value: number): string =>
-    figure(gradient === null ? null : gradient * value, 'stress', { digits: 3 });
+  const highest = gradient === null ? 0 : gradient * Math.max(...curve.shear);
+  const unit = unitFor(highest, 'stress');
+  const shear = (value: number): string => figureIn((gradient ?? 0) * value, unit, { digits: 3 });
+  const bands: readonly Band[] =
+    gradient === null
+      ? []
+      : bandsOf(curve, (i) => (REACH * curve.shear[i]!) / (Math.max(...curve.shear) * scale));
   const half = section.width / 2;
-  const most = Math.max(section.peakShear ?? 0, section.floorShear, section.sideShear);
-  const floorReach = (REACH * section.floorShear) / most;
-  const sideReach = (REACH * section.sideShear) / most;
   const speed = flow === null ? null : (Math.abs(flow) / section.area) * section.peakVelocity;
+  const now = scheme();
+  const point = ([a, b]: readonly [number, number]): string => `${x(a).toFixed(2)} ${y(b).toFixed(2)}`;
+  const outline = Array.from(curve.x, (a, i) => point([a, curve.y[i]!])).join('L');
+  const top =
+    y(section.depth) -
+    (layer.profile.kind === 'rectangle' ? (REACH * section.floorShear) / Math.max(...curve.shear) : 0);
   return (
     <figure className="section-picture">
-      <figcaption>Cross-section, wall shear drawn outward</figcaption>
+      <figcaption>
+        {gradient === null ? 'Cross-section' : 'Cross-section, wall shear drawn outward'}
+      </figcaption>
       <svg
         viewBox={`0 0 ${WIDE} ${HIGH}`}
         role="img"
-        aria-label={`Wall shear ${shear(section.floorShear)} on the floor, ${shear(section.sideShear)} on the side`}
+        aria-label={
+          gradient === null
+            ? 'Cross-section'
+            : `Cross-section: wall shear ${shear(section.floorShear)} on the floor, ${shear(section.sideShear)} ${unitInPrint(unit)} on the side`
+        }
       >
+        {bands.map((band, i) => (
+          <path
+            // biome-ignore lint/suspicious/noArrayIndexKey: a band has its place on the wall alone
+            key={i}
+            d={`M${band.corners.map(point).join('L')}Z`}
+            className="shear"
+            fill={amount(now, most > 0 ? ((gradient ?? 0) * band.shear) / most : 0)}
+            stroke={amount(now, most > 0 ? ((gradient ?? 0) * band.shear) / most : 0)}
+          />
+        ))}
+        <path className="body" d={`M${outline}Z`} />
         {gradient !== null && (
           <>
-            <path
-              className="shear"
-              d={bulge(x(-half), y(section.depth), x(half), y(section.depth), 0, -floorReach)}
-            />
-            <path className="shear" d={bulge(x(-half), y(0), x(half), y(0), 0, floorReach)} />
-            <path className="shear" d={bulge(x(-half), y(section.depth), x(-half), y(0), -sideReach, 0)} />
-            <path className="shear" d={bulge(x(half), y(section.depth), x(half), y(0), sideReach, 0)} />
-            <text x={WIDE / 2} y={y(section.depth) - floorReach - 6} textAnchor="middle">
-              {shear(section.floorShear)} {layer.profile.kind === 'rectangle' ? 'roof and floor' : 'floor'}
+            <text x={left} y={top - 6} textAnchor="middle">
+              {shear(section.floorShear)} {unitInPrint(unit)}{' '}
+              {layer.profile.kind === 'rectangle' ? 'roof and floor' : 'floor'}
             </text>
-            <text x={x(half) + sideReach + 6} y={y(section.depth / 2) + 4}>
+            <text x={x(middle + half) + REACH + 6} y={y(section.depth / 2) + 4}>
               {shear(section.sideShear)}
             </text>
           </>
         )}
-        <path
-          className="body"
-          d={`M${outline.map(([a, b]) => `${x(a).toFixed(2)} ${y(b).toFixed(2)}`).join('L')}Z`}
-        />
-        {speed !== null && section.depth * scale > 16 && (
-          <text className="inside" x={WIDE / 2} y={y(section.depth / 2) + 4} textAnchor="middle">
+        {speed !== null && section.depth * scale > 14 && (
+          <text className="inside" x={left} y={y(section.depth / 2) + 4} textAnchor="middle">
             {figure(speed, 'velocity', { digits: 2 })}
           </text>
         )}
-        <path className="measure" d={`M${x(-half)} ${HIGH - 16}v6m0 -3H${x(half)}m0 -3v6`} />
-        <text x={WIDE / 2} y={HIGH - 1} textAnchor="middle">
+        <path className="measure" d={`M${x(middle - half)} ${HIGH - 20}v6m0 -3H${x(middle + half)}m0 -3v6`} />
+        <text x={left} y={HIGH - 3} textAnchor="middle">
           {figure(section.width, 'length', { digits: 3 })}
         </text>
       </svg>
     </figure>
   );
-}
-
-/** From a to b with its middle pushed out by (dx, dy): nought at the corners, where the shear is. */
-function bulge(ax: number, ay: number, bx: number, by: number, dx: number, dy: number): string {
-  const k = 4 / 3;
-  const c1x = ax + (bx - ax) * 0.12 + dx * k;
-  const c1y = ay + (by - ay) * 0.12 + dy * k;
-  const c2x = bx - (bx - ax) * 0.12 + dx * k;
-  const c2y = by - (by - ay) * 0.12 + dy * k;
-  return `M${ax} ${ay}C${c1x} ${c1y} ${c2x} ${c2y} ${bx} ${by}Z`;
 }

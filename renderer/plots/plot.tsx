@@ -39,7 +39,7 @@ export function Plot({ title, data, across, up, limits = [], more, says }: PlotP
         paper_bgcolor: look.card,
         plot_bgcolor: look.card,
         font: { family: FIGURE_FACE, size: SIZES.note, color: look.soft },
-        xaxis: { ...axis, title: { text: across } },
+        xaxis: { ...axis, showgrid: false, title: { text: across } },
         yaxis: { ...axis, title: { text: up } },
         showlegend: false,
         shapes: limits.map(({ at }) => ({

@@ -91,6 +91,10 @@ export function drawScaleBar(
   const length = major * camera.scale;
   const x = size.width - 24 - length;
   const y = size.height - 30;
+  ctx.globalAlpha = 0.86;
+  ctx.fillStyle = palette.sheet;
+  ctx.fillRect(x - 10, y - 10, length + 20, 32);
+  ctx.globalAlpha = 1;
   ctx.strokeStyle = palette.ink;
   ctx.lineWidth = 1;
   ctx.beginPath();

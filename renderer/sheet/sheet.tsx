@@ -159,6 +159,8 @@ function watchPointer(
   };
   const space = (event: KeyboardEvent): void => {
     if (event.key !== ' ' || event.target !== element) return;
+    // in the middle of a typed figure it is a space
+    if (event.type === 'keydown' && bench.preview().readout?.some((line) => line.typing)) return;
     spaced = event.type === 'keydown';
     element.dataset.panning = String(spaced);
     event.preventDefault();
