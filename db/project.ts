@@ -188,10 +188,12 @@ export class Project {
     return this.#store.isOpen;
   }
 
-  /** Settles and closes. What cannot be settled stays in the log, which the next opening reads. */
+  /** Settles and closes. What cannot be settled stays in the log, which the next opening reads; it is not lost. */
   close(): void {
     try {
       this.settle();
+    } catch (error) {
+      if (!(error instanceof Problem)) throw error;
     } finally {
       this.#store.close();
     }

@@ -160,19 +160,26 @@ export class Workplace {
   async close(): Promise<void> {
     clearTimeout(this.#timer);
     const { home } = this.#opened;
-    const untouched =
-      home.mode === 'draft' && this.project.position.seq === 1 && this.project.listTrials().length === 0;
+    const untouched = home.mode === 'draft' && this.#isUntouched();
     this.project.stopBackup();
     await this.#busy;
     try {
       this.project.settle();
       await home.settled(this.project);
     } catch (error) {
+      // What is not in its place yet lies beside it, and is taken up at the next opening.
       this.#tell(error);
-    } finally {
-      this.project.close();
-      if (untouched) await removeFile(this.path);
-      await home.left();
+    }
+    this.project.close();
+    if (untouched) await removeFile(this.path);
+    await home.left();
+  }
+
+  #isUntouched(): boolean {
+    try {
+      return this.project.position.seq === 1 && this.project.listTrials().length === 0;
+    } catch {
+      return false;
     }
   }
 

@@ -24,10 +24,12 @@ export interface KillCount {
   undoBroken: number;
 }
 
+export const noCount = (): KillCount => ({ kills: 0, acknowledged: 0, lost: 0, damaged: 0, undoBroken: 0 });
+
 const hex = (bytes: Uint8Array): string => Buffer.from(bytes).toString('hex');
 
 /** What the child said it had kept: position, and the chips that undo and redo lead to. */
-class Model {
+export class Model {
   seq = 1;
   readonly states = new Map<number, string>();
   done: string[] = [];
@@ -66,7 +68,7 @@ export async function killMany(kills: number, seed: number): Promise<KillCount> 
   const chip = madeUpChip(30);
   makeFile(path, chip, { program: 'test' });
   const model = new Model(hex(chipHash(chip)));
-  const count: KillCount = { kills: 0, acknowledged: 0, lost: 0, damaged: 0, undoBroken: 0 };
+  const count = noCount();
   const next = random(seed);
   const settings = { userData, program: 'test', onChange: () => undefined, onTrouble: () => undefined };
   try {
@@ -104,7 +106,8 @@ export async function killMany(kills: number, seed: number): Promise<KillCount> 
   return count;
 }
 
-function compare(project: Project, model: Model, count: KillCount): void {
+/** Looks whether a project is where the model is, some steps back too. */
+export function compare(project: Project, model: Model, count: KillCount): void {
   const { seq } = project.position;
   if (seq < model.seq) count.lost += model.seq - seq;
   if (project.listTrials().length < model.trials) count.lost += 1;
