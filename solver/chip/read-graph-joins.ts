@@ -1,7 +1,6 @@
 import { pointAt } from './geometry/curve.ts';
 import { CURVATURE, type Elements, H0, H1, LENGTH, S0, STRIDE, UX, UY, X0, Y0 } from './geometry/elements.ts';
-import { meetElements } from './geometry/packed.ts';
-import { TOUCH } from './geometry/tolerance.ts';
+import { Meetings, meetElements } from './geometry/packed.ts';
 import type { Drawing } from './read-graph-drawing.ts';
 import type { Links } from './read-graph-links.ts';
 
@@ -23,6 +22,7 @@ export function joinChannels(drawing: Drawing, links: Links): Encounters {
   const found: Encounters = { overA: [], overB: [], sameLine: false };
   if (!index) return found;
   const { data, channel } = elements;
+  const meetings = new Meetings();
   for (let i = 0; i < elements.count; i++) {
     const near: number[] = index.search(
       boxes[4 * i]!,
@@ -36,20 +36,12 @@ export function joinChannels(drawing: Drawing, links: Links): Encounters {
     for (const j of near) {
       const b = channel[j]!;
       if (layerOf[b] !== layerOf[a] || (a === b && j === i + 1)) continue;
-      let meetings = 0;
-      let lastS = 0;
-      let lastT = 0;
-      meetElements(elements, i, j, (s, t) => {
-        // an end on an end is met from both sides
-        if (meetings > 0 && Math.abs(s - lastS) <= TOUCH && Math.abs(t - lastT) <= TOUCH) return;
-        meetings++;
-        lastS = s;
-        lastT = t;
-        addJoin(elements, links, i, s, j, t);
-      });
-      if (meetings > 0) {
+      meetElements(elements, i, j, meetings);
+      const { count } = meetings;
+      for (let k = 0; k < count; k++) addJoin(elements, links, i, meetings.s[k]!, j, meetings.t[k]!);
+      if (count > 0) {
         const bent = data[i * STRIDE + CURVATURE] !== data[j * STRIDE + CURVATURE];
-        if (meetings > 1 && !bent) found.sameLine = true;
+        if (count > 1 && !bent) found.sameLine = true;
       } else if (drawing.overlap(i, j)) {
         found.overA.push(i);
         found.overB.push(j);

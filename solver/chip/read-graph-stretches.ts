@@ -1,7 +1,7 @@
 import { type Area, inArea, nearestEdge } from './geometry/area.ts';
 import { type Body, commonCorners, halfAt, outline } from './geometry/body.ts';
 import { nearest, pointAt } from './geometry/curve.ts';
-import { meetElements } from './geometry/packed.ts';
+import { Meetings, meetElements } from './geometry/packed.ts';
 import type { Place } from './read-graph-areas.ts';
 import type { Drawing } from './read-graph-drawing.ts';
 import type { Encounters } from './read-graph-joins.ts';
@@ -57,6 +57,7 @@ function flood(
   const b = channel[found.overB[start]!]!;
   const stretch: Stretch = { a, b, inA: new Set(), inB: new Set(), points: [] };
   let explained = false;
+  const meetings = new Meetings();
   const queue = [start];
   seen[start] = 1;
   for (let k = queue.pop(); k !== undefined; k = queue.pop()) {
@@ -73,9 +74,8 @@ function flood(
         const key = p * total + q;
         const next = over.get(key);
         if (next === undefined && !explained) {
-          meetElements(drawing.elements, p, q, () => {
-            explained = true;
-          });
+          meetElements(drawing.elements, p, q, meetings);
+          explained = meetings.count > 0;
         }
         if (next !== undefined && !seen[next]) {
           seen[next] = 1;

@@ -1,5 +1,5 @@
 import { MITRE_TURN } from './body.ts';
-import { type Meeting, meet } from './curve.ts';
+import { meet } from './curve.ts';
 import {
   CURVATURE,
   type Elements,
@@ -119,11 +119,28 @@ export function elementBox(
   box[at + 3] = maxY;
 }
 
+/** Where two centrelines meet: distances along both from their elements' starts. Filled by `meetElements`. */
+export class Meetings {
+  count = 0;
+  readonly s: number[] = [];
+  readonly t: number[] = [];
+
+  /** Adds a meeting unless it is the one before, met from the other side. */
+  readonly add = (s: number, t: number): void => {
+    const k = this.count;
+    if (k > 0 && Math.abs(s - this.s[k - 1]!) <= TOUCH && Math.abs(t - this.t[k - 1]!) <= TOUCH) return;
+    this.s[k] = s;
+    this.t[k] = t;
+    this.count = k + 1;
+  };
+}
+
 /** Sines of angles below this are treated with care: ends may touch far from where the lines cross. */
 const SHALLOW = 0.01;
 
 /** `meet` of the centrelines of two elements, without making objects where both are straight. */
-export function meetElements(elements: Elements, i: number, j: number, found: Meeting): void {
+export function meetElements(elements: Elements, i: number, j: number, found: Meetings): void {
+  found.count = 0;
   const d = elements.data;
   const a = i * STRIDE;
   const b = j * STRIDE;
@@ -135,13 +152,13 @@ export function meetElements(elements: Elements, i: number, j: number, found: Me
     const dx = d[b + X0]! - d[a + X0]!;
     const dy = d[b + Y0]! - d[a + Y0]!;
     const sine = ax * by - ay * bx;
+    const m = d[a + LENGTH]!;
+    const n = d[b + LENGTH]!;
     if (sine > SHALLOW || sine < -SHALLOW) {
       const s = (dx * by - dy * bx) / sine;
       const t = (dx * ay - dy * ax) / sine;
-      const m = d[a + LENGTH]!;
-      const n = d[b + LENGTH]!;
       if (s >= -TOUCH && s <= m + TOUCH && t >= -TOUCH && t <= n + TOUCH) {
-        found(s < 0 ? 0 : Math.min(s, m), t < 0 ? 0 : Math.min(t, n));
+        found.add(s < 0 ? 0 : Math.min(s, m), t < 0 ? 0 : Math.min(t, n));
         return;
       }
       const far = (2 * TOUCH) / SHALLOW;
@@ -153,9 +170,22 @@ export function meetElements(elements: Elements, i: number, j: number, found: Me
       const off0 = dx * ay - dy * ax;
       const off1 = ex * ay - ey * ax;
       if ((off0 > 2 * TOUCH && off1 > 2 * TOUCH) || (off0 < -2 * TOUCH && off1 < -2 * TOUCH)) return;
+      // one ends where the other starts, and they go straight on
+      const along0 = dx * ax + dy * ay;
+      const along1 = ex * ax + ey * ay;
+      if (Math.abs(off0) <= TOUCH && Math.abs(off1) <= TOUCH) {
+        if (along0 >= m && along1 >= m && Math.min(along0, along1) <= m + TOUCH) {
+          found.add(m, along0 < along1 ? 0 : n);
+          return;
+        }
+        if (along0 <= 0 && along1 <= 0 && Math.max(along0, along1) >= -TOUCH) {
+          found.add(0, along0 > along1 ? 0 : n);
+          return;
+        }
+      }
     }
   }
-  meet(elements.curve(i), elements.curve(j), found);
+  meet(elements.curve(i), elements.curve(j), found.add);
 }
 
 /** Whether an edge of convex polygon p (n numbers) has all of q (m numbers) beyond it by more than TOUCH. */
