@@ -65,12 +65,14 @@ export function shearNear(curve: WallCurve, place: Place): Reading {
  */
 export function curvePoints(curve: WallCurve): number[] {
   const points: number[] = [];
-  for (let i = 0; i < curve.ends.length; i += 1) {
+  const last = curve.ends.length - 1;
+  const closed = curve.endsAt[last][1].every((value, axis) => value === curve.endsAt[0][0][axis]);
+  for (let i = 0; i <= last; i += 1) {
     const stretch = extended(curve, i);
     const end = (which: 0 | 1, s: number): void => {
-      // The corner that closes one stretch opens the next.
-      if (curve.ends[i][which] === 'bend' || (which === 0 && i > 0 && curve.ends[i - 1][1] === 'still'))
-        return;
+      // The corner that closes one stretch opens the next, and on a closed wall the last the first.
+      const opened = which === 0 && i > 0 && curve.ends[i - 1][1] === 'still';
+      if (curve.ends[i][which] === 'bend' || opened || (which === 1 && i === last && closed)) return;
       points.push(...curve.endsAt[i][which], Math.max(0, interpolate(stretch, stretch.shear, s)));
     };
     end(0, curve.from[i]);

@@ -1,0 +1,121 @@
+import { expect, test } from 'vitest';
+import { verify } from '../../test/verify/row.ts';
+import { varyingConductance } from './conductance-at.ts';
+import { etchedShape } from './etched-shape.ts';
+import type { Profile } from './profile.ts';
+import { sectionOf } from './section-of.ts';
+import { solveSection } from './solve-section.ts';
+import { taperResistance } from './taper.ts';
+
+const relative = (got: number, wanted: number): number => Math.abs(got / wanted - 1);
+const SILICON = (Math.atan(Math.SQRT2) * 180) / Math.PI;
+
+/** Solved directly to a bound of 2e-6, in a shape of depth 1. */
+function direct(profile: Exclude<Profile, { kind: 'polygon' }>, width: number): number {
+  const shape = etchedShape(profile, width, 1, '');
+  const { conductance } = solveSection(shape, 2e-6, '', Number.POSITIVE_INFINITY);
+  return (conductance + shape.extra / 12) * shape.unit ** 4;
+}
+
+for (const [profile, widths] of [
+  [{ kind: 'trapezoid', wallAngle: SILICON }, [0.9, 1.5, 1.9, 2.6, 3.7, 7.3, 14]],
+  [{ kind: 'rounded' }, [0.03, 0.4, 1.7, 6.1]],
+  [{ kind: 'triangle' }, [0.4, 1.3, 3.3]],
+] as const) {
+  verify(
+    {
+      quantity: 'table of conductance against width, worst of a solve at other widths',
+      check: 'exact',
+      at: profile.kind,
+      source: 'direct finite-element solutions with a proven bound of 2e-6',
+      tolerance: 1e-5,
+    },
+    () => {
+      const table = varyingConductance(profile, '');
+      return Math.max(...widths.map((width) => relative(table.at(width, 1), direct(profile, width))));
+    },
+  );
+}
+
+verify(
+  {
+    quantity: 'resistance of a taper from a closed V to an open trapezoid',
+    check: 'exact',
+    at: '54.74°, width 0.5 to 3.5 depths',
+    source: 'composite Gauss quadrature of direct solutions',
+    tolerance: 2e-5,
+  },
+  () => {
+    const profile = { kind: 'trapezoid', wallAngle: SILICON } as const;
+    const closes = Math.SQRT2;
+    // The V part in closed form: ∫ dw/(c w⁴).
+    const v = direct(profile, closes) / closes ** 4;
+    const closed = (1 / 0.5 ** 3 - 1 / closes ** 3) / (3 * v);
+    // The open part: five-point Gauss on the width, in two halves.
+    const nodes = [-0.906179845938664, -0.538469310105683, 0, 0.538469310105683, 0.906179845938664];
+    const weights = [
+      0.236926885056189, 0.478628670499366, 0.568888888888889, 0.478628670499366, 0.236926885056189,
+    ];
+    let open = 0;
+    const breaks = [closes, 2.1, 3.5];
+    for (let i = 1; i < breaks.length; i += 1) {
+      const half = (breaks[i] - breaks[i - 1]) / 2;
+      nodes.forEach((node, k) => {
+        open += (half * weights[k]) / direct(profile, breaks[i - 1] + half * (1 + node));
+      });
+    }
+    return relative(taperResistance(profile, 0.5, 3.5, 1, 1), (closed + open) / 3);
+  },
+);
+
+test('a taper is the same from either end, and scales', () => {
+  for (const profile of [
+    { kind: 'trapezoid', wallAngle: 75 },
+    { kind: 'rounded' },
+    { kind: 'ellipse' },
+  ] as const) {
+    const r = taperResistance(profile, 1e-4, 3e-4, 5e-5, 1e-3);
+    expect(relative(taperResistance(profile, 3e-4, 1e-4, 5e-5, 1e-3), r)).toBeLessThan(1e-13);
+    expect(relative(taperResistance(profile, 1, 3, 0.5, 10) * 1e12, r)).toBeLessThan(1e-12);
+  }
+});
+
+test('without a change of width a taper is a straight channel; a slight one lies within the section’s error', () => {
+  for (const profile of [
+    { kind: 'trapezoid', wallAngle: 60 },
+    { kind: 'rounded' },
+    { kind: 'triangle' },
+  ] as const) {
+    const section = sectionOf(profile, 2e-4, 1e-4);
+    expect(taperResistance(profile, 2e-4, 2e-4, 1e-4, 0.01)).toBe(0.01 / section.conductance);
+    const slight = taperResistance(profile, 2e-4, 2e-4 * (1 + 1e-9), 1e-4, 0.01);
+    expect(relative(slight, 0.01 / section.conductance)).toBeLessThan(section.error + 1e-5);
+  }
+  const points = [
+    [0, 0],
+    [1e-4, 0],
+    [1e-4, 5e-5],
+    [0, 5e-5],
+  ] as const;
+  const polygon = { kind: 'polygon', points } as const;
+  expect(taperResistance(polygon, 1, 2, 3, 0.01)).toBe(0.01 / sectionOf(polygon, 1, 3).conductance);
+});
+
+test('an ellipse tapers as its closed form says', () => {
+  // ∫ 4(a² + b²)/(π a³b³) da with b fixed.
+  const [a1, a2, b] = [1, 4, 0.7];
+  const antiderivative = (a: number): number => Math.log(a) - b ** 2 / (2 * a * a);
+  const wanted = ((4 / (Math.PI * b ** 3)) * (antiderivative(a2) - antiderivative(a1))) / (a2 - a1);
+  expect(relative(taperResistance({ kind: 'ellipse' }, 2 * a1, 2 * a2, 2 * b, 1), wanted)).toBeLessThan(
+    1e-10,
+  );
+});
+
+test('what no section can be, no taper can be', () => {
+  const taper = (profile: Profile, w1: number, w2: number) => () =>
+    taperResistance(profile, w1, w2, 1, 1, 'feed');
+  expect(taper({ kind: 'trapezoid', wallAngle: 95 }, 1, 2)).toThrow(/^feed: A wall angle of 95°/);
+  expect(taper({ kind: 'rounded' }, 1, 0)).toThrow(/^feed: The width/);
+  expect(taper({ kind: 'circle' }, 1, 2)).toThrow(/^feed: A round bore/);
+  expect(taper({ kind: 'triangle' }, 1e-4, 2)).toThrow(/^feed: A triangle/);
+});
