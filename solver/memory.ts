@@ -1,5 +1,10 @@
+import { cutCells } from './cell/cut/cut.ts';
+import type { Cut } from './cell/cut/spec.ts';
+import type { CellStore } from './cell/store.ts';
 import type { Chip } from './chip/chip.ts';
 import type { Graph } from './chip/graph.ts';
+import { readGraph } from './chip/read-graph.ts';
+import { type CellMemory, cellMemory } from './lump/cells.ts';
 import { lawMemory } from './lump/laws.ts';
 import type { Lumped, LumpMemory } from './lump/lump.ts';
 import { type PreparedNetwork, prepareNetwork } from './network/prepare.ts';
@@ -13,8 +18,10 @@ import type { NetworkSolution, NetworkSpec } from './network/spec.ts';
  */
 export interface Memory {
   readonly lumps: LumpMemory;
-  /** The last drawing's graph where nothing that it is read from has changed, else a new one. */
-  graph(chip: Chip, read: (chip: Chip) => Graph): Graph;
+  readonly cells: CellMemory;
+  /** The last drawing's graph, and how it is cut, where nothing that they are read from has changed; else new ones. */
+  graph(chip: Chip): Graph;
+  cut(chip: Chip): Cut;
   /**
    * Solves, reusing the order and symbolic factorisation of the last network of the same topology, and
    * its pressures as a start where ducts follow laws of their own.
@@ -22,15 +29,23 @@ export interface Memory {
   network(lumped: Lumped): NetworkSolution;
 }
 
-export function emptyMemory(): Memory {
-  let last: { chip: Chip; graph: Graph } | null = null;
+/** @param store where solved cells are kept; in memory alone if none is given */
+export function emptyMemory(store?: CellStore): Memory {
+  let last: { chip: Chip; graph: Graph; cut: Cut | null } | null = null;
+  const drawing = (chip: Chip): { graph: Graph; cut: Cut | null } => {
+    if (!last || !sameDrawing(last.chip, chip)) last = { chip, graph: readGraph(chip), cut: null };
+    return last;
+  };
   let prepared: { spec: NetworkSpec; network: PreparedNetwork } | null = null;
   let start: Float64Array | undefined;
   return {
+    cells: cellMemory(store),
     lumps: { ducts: new Map(), laws: lawMemory() },
-    graph(chip, read) {
-      if (!last || !sameDrawing(last.chip, chip)) last = { chip, graph: read(chip) };
-      return last.graph;
+    graph: (chip) => drawing(chip).graph,
+    cut(chip) {
+      const known = drawing(chip);
+      known.cut ??= cutCells(chip, known.graph);
+      return known.cut;
     },
     network({ spec, laws }) {
       if (!prepared || !sameTopology(prepared.spec, spec)) {

@@ -1,29 +1,50 @@
+import { type Accuracy, DEFAULT_ACCURACY } from './cell/cell.ts';
 import type { Chip } from './chip/chip.ts';
-import { readGraph } from './chip/read-graph.ts';
 import type { Result } from './chip/result.ts';
 import { fluidOf } from './fluid/fluid.ts';
+import { placeCells } from './lump/cells.ts';
 import { checkDrives } from './lump/floating.ts';
+import { cellLayout, idealLayout, type Layout } from './lump/layout.ts';
 import { lump } from './lump/lump.ts';
 import { emptyMemory, type Memory } from './memory.ts';
 import { report } from './report/report.ts';
 
 export interface SolveOptions {
+  /** Junctions solved in three dimensions (the default), or one pressure each. */
   readonly junctions?: 'ideal' | 'solved';
-  /** Relative accuracy asked of the solved junctions. */
+  /** Relative accuracy asked of the flow through solved junctions; their peaks get five times that. */
   readonly accuracy?: number;
+  /** Take only junctions that memory holds; the others count as ideal and wait in `memory.cells.waiting`. */
+  readonly haste?: boolean;
 }
 
 /**
- * The whole way once: chip → fluid and drawing → resistances → network → what a designer asks.
+ * The whole way once: chip → fluid and drawing → ducts and cells → network → what a designer asks.
  * Throws `Problem` where the chip cannot be solved.
  *
  * @param memory what may be kept between solves of a chip that is being edited
  */
-export function solve(chip: Chip, _options: SolveOptions = {}, memory: Memory = emptyMemory()): Result {
+export function solve(chip: Chip, options: SolveOptions = {}, memory: Memory = emptyMemory()): Result {
   const fluid = fluidOf(chip.fluid);
-  const graph = memory.graph(chip, readGraph);
+  const graph = memory.graph(chip);
   const drives = checkDrives(chip, graph, fluid.density);
-  const lumped = lump(chip, graph, fluid, memory.lumps);
+  const layout = options.junctions === 'ideal' ? idealLayout(graph) : solvedLayout(chip, options, memory);
+  const lumped = lump(chip, graph, layout, fluid, memory.lumps);
   const flow = memory.network(lumped);
   return report(chip, graph, fluid, lumped, flow, drives);
+}
+
+function solvedLayout(chip: Chip, options: SolveOptions, memory: Memory): Layout {
+  const cut = memory.cut(chip);
+  const { cells, findings } = placeCells(
+    cut.cells,
+    accuracyOf(options),
+    options.haste ?? false,
+    memory.cells,
+  );
+  return cellLayout(memory.graph(chip), cut, cells, findings);
+}
+
+export function accuracyOf({ accuracy }: SolveOptions): Accuracy {
+  return accuracy === undefined ? DEFAULT_ACCURACY : { flow: accuracy, peak: 5 * accuracy };
 }

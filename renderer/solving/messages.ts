@@ -1,7 +1,10 @@
+import type { Accuracy, ShapeSolution } from '../../solver/cell/cell.ts';
+import type { CellShape } from '../../solver/cell/shape.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { ChipEdit } from '../../solver/chip/edit.ts';
 import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
+import type { ProblemKind } from '../../solver/problem/problem.ts';
 import type { SolveOptions } from '../../solver/solve.ts';
 
 /** What the page tells the solving thread; `id` grows by one with every chip it means. */
@@ -25,6 +28,19 @@ export type Outcome =
   | { readonly ok: true; readonly result: Result }
   | { readonly ok: false; readonly problem: Refused };
 
+/** A junction for a cell thread to solve; `id` is the asker's. */
+export interface CellOrder {
+  readonly id: number;
+  readonly shape: CellShape;
+  readonly name: string;
+  readonly accuracy: Accuracy;
+}
+
+export type CellNews = { readonly id: number } & (
+  | { readonly key: string; readonly solution: ShapeSolution }
+  | { readonly problem: Refused & { readonly kind: ProblemKind } }
+);
+
 export type News =
   /** The drawing as the fluid reads it crosses once: 'same' where it is that of the answer before. */
   | {
@@ -32,6 +48,8 @@ export type News =
       readonly id: number;
       readonly graph: Graph | 'same' | null;
       readonly outcome: Outcome;
+      /** Junctions still being solved, which count as ideal in this answer; another answer follows. */
+      readonly waiting: number;
     }
   | { readonly kind: 'tried'; readonly id: number; readonly outcome: Outcome }
   | { readonly kind: 'swept'; readonly id: number; readonly index: number; readonly outcome: Outcome };

@@ -18,6 +18,8 @@ export interface Solved {
   readonly graphChip: Chip | null;
   /** The answer to a newer chip is on its way. */
   readonly busy: boolean;
+  /** Junctions that still count as ideal in this result because they are being solved. */
+  readonly waiting: number;
 }
 
 const NOTHING: Solved = {
@@ -27,6 +29,7 @@ const NOTHING: Solved = {
   graph: null,
   graphChip: null,
   busy: false,
+  waiting: 0,
 };
 
 /** A thread as seen from here; a test may put a function in its place. */
@@ -70,7 +73,8 @@ export function createSolver(thread: Thread): Solver {
       sweeps.get(news.id)?.(news.index, news.outcome);
       return;
     }
-    const chip = asked.get(news.id);
+    // The same chip is answered again as its junctions come.
+    const chip = asked.get(news.id) ?? (news.id === newest ? solved.get().chip : null);
     if (!chip) return;
     for (const id of [...asked.keys()]) if (id <= news.id) asked.delete(id);
     const { outcome } = news;
@@ -82,6 +86,7 @@ export function createSolver(thread: Thread): Solver {
       graph: news.graph === 'same' ? before.graph : news.graph,
       graphChip: news.graph === null ? null : chip,
       busy: news.id !== newest,
+      waiting: news.waiting,
     });
   });
 

@@ -1,19 +1,32 @@
+import type { Accuracy, ShapeSolution } from '../../solver/cell/cell.ts';
+import type { CellSpec } from '../../solver/cell/cut/spec.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { applyEdit } from '../../solver/chip/edit.ts';
 import type { Graph } from '../../solver/chip/graph.ts';
-import { readGraph } from '../../solver/chip/read-graph.ts';
+import { settleWaiting } from '../../solver/lump/cells.ts';
 import { emptyMemory } from '../../solver/memory.ts';
 import { Problem } from '../../solver/problem/problem.ts';
-import { type SolveOptions, solve } from '../../solver/solve.ts';
+import { accuracyOf, type SolveOptions, solve } from '../../solver/solve.ts';
 import type { News, Order, Outcome, Refused } from './messages.ts';
+
+/** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
+export interface CellHand {
+  solve(cells: readonly CellSpec[], accuracy: Accuracy): void;
+  /** `put` the finding into memory, then say so by `listener`. */
+  listen(listener: (cell: CellSpec, accuracy: Accuracy, found: Found) => void): void;
+}
+export type Found = { readonly key: string; readonly solution: ShapeSolution } | Problem;
 
 /**
  * The solving thread's behaviour, without a thread: orders in, news out. Edits that arrive while one is
- * being solved are taken together, so that it is always the newest chip that is answered.
+ * being solved are taken together, so that it is always the newest chip that is answered. With `hand`
+ * an answer never waits for junctions: those not known yet count as ideal, and the answer is given
+ * again as they come.
  */
 export function solvingThread(
   tell: (news: News) => void,
   later: (work: () => void) => void,
+  hand: CellHand | null = null,
 ): (order: Order) => void {
   let memory = emptyMemory();
   let chip: Chip | null = null;
@@ -23,9 +36,9 @@ export function solvingThread(
   let sent: Graph | null = null;
   const cancelled = new Set<number>();
 
-  const outcomeOf = (which: Chip): Outcome => {
+  const outcomeOf = (which: Chip, haste = hand !== null): Outcome => {
     try {
-      return { ok: true, result: solve(which, options, memory) };
+      return { ok: true, result: solve(which, { ...options, haste }, memory) };
     } catch (error) {
       return { ok: false, problem: refused(error) };
     }
@@ -37,13 +50,21 @@ export function solvingThread(
     const outcome = outcomeOf(chip);
     let graph: Graph | null = null;
     try {
-      graph = memory.graph(chip, readGraph);
+      graph = memory.graph(chip);
     } catch {
       // the outcome says why there is none
     }
-    tell({ kind: 'solved', id: newest, graph: graph && graph === sent ? 'same' : graph, outcome });
+    const { waiting } = memory.cells;
+    const news = graph && graph === sent ? 'same' : graph;
+    tell({ kind: 'solved', id: newest, graph: news, outcome, waiting: outcome.ok ? waiting.length : 0 });
     sent = graph;
+    // Anew each time: one that came may have been a copy of others.
+    hand?.solve(waiting, accuracyOf(options));
   };
+  hand?.listen((cell, accuracy, found) => {
+    settleWaiting(cell, accuracy, found, memory.cells);
+    soon();
+  });
   const soon = (): void => {
     if (due) return;
     due = true;
@@ -52,7 +73,7 @@ export function solvingThread(
 
   const sweep = (id: number, variants: readonly Chip[], index: number): void => {
     if (index >= variants.length || cancelled.delete(id)) return;
-    tell({ kind: 'swept', id, index, outcome: outcomeOf(variants[index]!) });
+    tell({ kind: 'swept', id, index, outcome: outcomeOf(variants[index]!, false) });
     later(() => sweep(id, variants, index + 1));
   };
 

@@ -1,3 +1,4 @@
+import { cellHand } from './cell-hand.ts';
 import type { News, Order } from './messages.ts';
 import { solvingThread } from './thread.ts';
 
@@ -17,5 +18,5 @@ const later = (work: () => void): void => {
   ports.port2.postMessage(null);
 };
 
-const order = solvingThread((news) => scope.postMessage(news), later);
+const order = solvingThread((news) => scope.postMessage(news), later, cellHand());
 scope.addEventListener('message', (event) => order(event.data));

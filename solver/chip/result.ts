@@ -66,7 +66,10 @@ export interface CellResult {
   readonly portMatrix: readonly (readonly number[])[];
   readonly peakWallShear: number | null;
   readonly peakAt: readonly [number, number] | null;
+  /** Bound of the relative error of the port matrix; 1 where the cell is not solved and counts as ideal. */
   readonly accuracy: number;
+  /** Bound of the relative error of the peak, where there is one. */
+  readonly peakError?: number;
 }
 
 export interface RouteResult {

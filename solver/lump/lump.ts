@@ -1,27 +1,28 @@
 import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
 import type { Fluid } from '../fluid/fluid.ts';
-import type { Drive, NetworkSpec } from '../network/spec.ts';
+import type { Block, Drive, NetworkSpec } from '../network/spec.ts';
 import type { Profile } from '../section/profile.ts';
 import { type DuctFlowLaw, ordinaryViscosity } from '../section/rheology/duct-law.ts';
 import type { Rheology } from '../section/rheology/local.ts';
 import { driveOf } from './drives.ts';
 import { type Duct, ductOf } from './duct.ts';
 import { chipLaws, type LawMemory } from './laws.ts';
-import { depthOf, idealStretches, type Stretch } from './stretches.ts';
+import type { Layout } from './layout.ts';
+import { depthOf, type Stretch } from './stretches.ts';
 
 /** The chip lumped into a network of hydraulic resistances, with the way back to the drawing. */
-export interface Lumped {
+export interface Lumped extends Layout {
   readonly spec: NetworkSpec;
-  /** In the order of the network's ducts; ducts beyond them are tubing. */
-  readonly stretches: readonly Stretch[];
+  /** Of each stretch. The network has these first, then those that stand in for cells, then tubing. */
   readonly ducts: readonly Duct[];
+  /** Block of the network that each cell is; -1 where it is not solved. */
+  readonly cellBlock: Int32Array;
   /** Of every duct of the network, tubing included; null where all are linear. */
   readonly laws: readonly DuctFlowLaw[] | null;
   /** Pa s: the fluid's own, or for a shear-thinning one what its linear start is made with. */
   readonly viscosity: number;
-  /** Node of each port, and its drive in the network (-1 where closed), in the chip's order of ports. */
-  readonly portNode: Int32Array;
+  /** Drive of each port in the network, -1 where closed, in the chip's order of ports. */
   readonly portDrive: Int32Array;
 }
 
@@ -33,26 +34,37 @@ export interface LumpMemory {
 /** The map of ducts is cleared when it grows beyond what a chip can need. */
 const MOST_DUCTS = 500_000;
 
-/** The network with ideal junctions. */
-export function lump(chip: Chip, graph: Graph, fluid: Fluid, memory: LumpMemory): Lumped {
+/** The network of a layout: a resistance for every duct, a port matrix for every solved cell, the drives. */
+export function lump(chip: Chip, graph: Graph, layout: Layout, fluid: Fluid, memory: LumpMemory): Lumped {
   if (memory.ducts.size > MOST_DUCTS) memory.ducts.clear();
   const rheology: Rheology = fluid.shear ? { shear: fluid.shear } : { viscosity: fluid.viscosity! };
   const viscosity = ordinaryViscosity(rheology);
-  const stretches = idealStretches(graph);
-  const ducts = stretches.map((stretch) => stretchDuct(chip, graph, stretch, memory.ducts));
-  const from = stretches.map((stretch) => stretch.from);
-  const to = stretches.map((stretch) => stretch.to);
-  const resistance = stretches.map((stretch, index) => viscosity * ducts[index].resistance * stretch.length);
+  const all = layout.inner.length === 0 ? layout.stretches : [...layout.stretches, ...layout.inner];
+  const ducts = all.map((stretch) => stretchDuct(chip, graph, stretch, memory.ducts));
+  const from = all.map((stretch) => stretch.from);
+  const to = all.map((stretch) => stretch.to);
+  const resistance = all.map((stretch, index) => viscosity * ducts[index].resistance * stretch.length);
+  const laws = chipLaws(chip, graph, rheology, all, memory.laws);
 
-  const laws = chipLaws(chip, graph, rheology, stretches, memory.laws);
+  const blocks: Block[] = [];
+  const cellBlock = new Int32Array(layout.cells.length).fill(-1);
+  layout.cells.forEach(({ spec, solution }, index) => {
+    if (!solution) return;
+    cellBlock[index] = blocks.length;
+    blocks.push({
+      nodes: Int32Array.from(spec.faces, (face) => face.node),
+      // The shape is in metres and was solved with viscosity 1.
+      matrix: solution.portMatrix.map((entry) => entry / viscosity),
+    });
+  });
   const drives: Drive[] = [];
   const portDrive = new Int32Array(chip.ports.length).fill(-1);
-  let nodeCount = graph.sites.length;
+  let { nodeCount } = layout;
   chip.ports.forEach((port, index) => {
     const drive = driveOf(port, viscosity, fluid.density);
     if (!drive) return;
     portDrive[index] = drives.length;
-    let node = graph.portSite[index];
+    let node = layout.portNode[index];
     if (!laws) {
       drives.push({ node, ...drive });
       return;
@@ -76,14 +88,14 @@ export function lump(chip: Chip, graph: Graph, fluid: Fluid, memory: LumpMemory)
       ductFrom: Int32Array.from(from),
       ductTo: Int32Array.from(to),
       resistance: Float64Array.from(resistance),
-      blocks: [],
+      blocks,
       drives,
     },
-    stretches,
+    ...layout,
     ducts,
+    cellBlock,
     laws,
     viscosity,
-    portNode: graph.portSite,
     portDrive,
   };
 }

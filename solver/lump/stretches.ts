@@ -1,5 +1,4 @@
 import type { Chip } from '../chip/chip.ts';
-import type { Graph } from '../chip/graph.ts';
 
 /** A stretch of channel that the network sees as one duct. */
 export interface Stretch {
@@ -20,24 +19,7 @@ export interface Stretch {
 /** In a metre; dividing by it rounds once, which multiplying by 1e-9 does not. */
 export const NANOMETRES = 1e9;
 
-/**
- * Ideal junctions: every site is one node at one pressure, every piece one stretch. A piece that lies
- * wholly inside a port's hole or a chamber keeps a nanometre, so that its flow stays defined; that is
- * below the rounding of the drawing.
- */
-export function idealStretches(graph: Graph): Stretch[] {
-  return graph.pieces.map((piece, index) => ({
-    piece: index,
-    from: piece.from,
-    to: piece.to,
-    fromName: graph.sites[piece.from]!.name,
-    toName: graph.sites[piece.to]!.name,
-    length: Math.max(piece.length, 1) / NANOMETRES,
-    width: [piece.width[0] / NANOMETRES, piece.width[1] / NANOMETRES],
-  }));
-}
-
 /** Depth of a layer in metres. */
 export function depthOf(chip: Chip, layerIndex: number): number {
-  return chip.layers[layerIndex]!.depth / NANOMETRES;
+  return chip.layers[layerIndex].depth / NANOMETRES;
 }

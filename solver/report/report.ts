@@ -1,6 +1,6 @@
 import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
-import type { CellResult, ChannelResult, PieceResult, PortResult, Result } from '../chip/result.ts';
+import type { ChannelResult, PieceResult, PortResult, Result } from '../chip/result.ts';
 import { ductsBetween } from '../exposure/reach.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { DriveCheck } from '../lump/floating.ts';
@@ -8,7 +8,9 @@ import type { Lumped } from '../lump/lump.ts';
 import { NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
+import { cellResults, inertiaFindings } from './cells.ts';
 import { faultFindings } from './faults.ts';
+import { joinedEdges, joinedFlows } from './joined.ts';
 import { limitResults } from './limits.ts';
 import { lawPieceResult, pieceResult } from './pieces.ts';
 import { stillDucts } from './still.ts';
@@ -34,16 +36,16 @@ export function report(
   const channels = byChannel(chip, graph, lumped, pieces);
   const ports = portResults(chip, graph, lumped, flow, drives);
   const total = ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0);
-  const cells: CellResult[] = [];
+  const { cells, findings: cellFindings } = cellResults(chip, lumped, flow);
   const between = (start: string, goal: string): Set<string> =>
-    piecesBetween(chip, graph, lumped, flow, start, goal);
+    piecesBetween(chip, lumped, flow, start, goal);
   const limits = limitResults(chip, channels, cells, between);
   return {
     format: 'channelwright-result',
     version: 1,
     chip: chip.name,
     status: 'solved',
-    junctions: 'ideal',
+    junctions: junctionsOf(lumped),
     fluid: { viscosity: fluid.viscosity, density: fluid.density },
     ports,
     channels,
@@ -60,9 +62,12 @@ export function report(
       ...graph.findings,
       ...drives.findings,
       ...faultFindings(graph, flow),
-      ...unresolvedFindings(lumped, graph, flows),
+      ...unresolvedFindings(lumped, flows),
       ...limits.findings,
-      ...idealNote(graph),
+      ...cellFindings,
+      ...inertiaFindings(lumped, chip, flow, pieces, fluid.density),
+      ...lumped.findings,
+      ...idealNote(graph, lumped),
     ],
   };
 }
@@ -132,14 +137,13 @@ function byChannel(
   return chip.channels.map((channel, index) => ({ id: channel.id, pieces: lists[index] }));
 }
 
-function unresolvedFindings(lumped: Lumped, graph: Graph, flows: readonly (number | null)[]): Finding[] {
+function unresolvedFindings(lumped: Lumped, flows: readonly (number | null)[]): Finding[] {
   const names: string[] = [];
   let count = 0;
-  lumped.stretches.forEach((stretch, index) => {
+  lumped.stretches.forEach((_stretch, index) => {
     if (flows[index] !== null) return;
     count += 1;
-    const piece = graph.pieces[stretch.piece];
-    if (names.length < 4) names.push(`${piece.channel}#${piece.number}`);
+    if (names.length < 4) names.push(lumped.names[index]);
   });
   if (count === 0) return [];
   const more = count > names.length ? ` and ${count - names.length} more` : '';
@@ -154,7 +158,15 @@ function unresolvedFindings(lumped: Lumped, graph: Graph, flows: readonly (numbe
   ];
 }
 
-function idealNote(graph: Graph): Finding[] {
+/** Whether all, none or some of the junctions were solved. */
+function junctionsOf({ cells }: Lumped): Result['junctions'] {
+  const solved = cells.filter(({ solution }) => solution !== null).length;
+  if (solved === 0) return 'ideal';
+  return solved === cells.length ? 'solved' : 'mixed';
+}
+
+function idealNote(graph: Graph, { cells }: Lumped): Finding[] {
+  if (cells.length > 0) return [];
   const junctions = graph.sites.filter((site) => site.kind === 'junction').length;
   if (junctions === 0) return [];
   const first = graph.sites.find((site) => site.kind === 'junction')!;
@@ -173,20 +185,17 @@ function idealNote(graph: Graph): Finding[] {
 /** Names of the pieces that carry fluid from one port to another. */
 function piecesBetween(
   chip: Chip,
-  graph: Graph,
   lumped: Lumped,
   flow: NetworkSolution,
   start: string,
   goal: string,
 ): Set<string> {
   const node = (id: string): number => lumped.portNode[chip.ports.findIndex((port) => port.id === id)];
-  const { nodeCount, ductFrom, ductTo } = lumped.spec;
-  const found = ductsBetween(nodeCount, ductFrom, ductTo, flow.ductFlow, node(start), node(goal));
+  const { nodes, from, to } = joinedEdges(lumped.spec);
+  const found = ductsBetween(nodes, from, to, joinedFlows(flow, from.length), node(start), node(goal));
   const names = new Set<string>();
-  lumped.stretches.forEach((stretch, index) => {
-    if (found[index] === 0) return;
-    const piece = graph.pieces[stretch.piece];
-    names.add(`${piece.channel}#${piece.number}`);
+  lumped.stretches.forEach((_stretch, index) => {
+    if (found[index] === 1) names.add(lumped.names[index]);
   });
   return names;
 }

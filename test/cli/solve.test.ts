@@ -244,7 +244,7 @@ describe('tables', () => {
   });
 
   test('the columns of a whole report are aligned', async () => {
-    const { out } = await run(file('tee.json'));
+    const { out } = await run(file('tee.json'), '--junctions', 'ideal');
     const lines = out.split('\n');
     const start = lines.indexOf('Channels');
     const rows = lines.slice(start + 3, start + 6);
