@@ -150,6 +150,10 @@ export const REQUESTS = {
   },
   /** A new draft from a demo. */
   'project.demo': { input: z.strictObject({ id: key }), output: state },
+  /**
+   * Opens a project file here (what was open is closed). A damaged one is left as it is: what can be read
+   * of it is opened as a draft, and `notes` say what was kept and what was lost.
+   */
   'project.open': { input: z.strictObject({ path }), output: state },
   /** A project file whose bytes the page was given (dropped on a browser): opened as a draft. */
   'project.upload': { input: z.strictObject({ name, bytes }), output: state },
@@ -183,11 +187,6 @@ export const REQUESTS = {
   },
   /** Puts a backup beside the file, under a name that says so, and opens it; the file itself stays. */
   'project.restore': { input: z.strictObject({ path: path.optional(), id: key }), output: state },
-  /** Reads what can be read of a damaged project into a new file beside it and opens that. */
-  'project.salvage': {
-    input: z.strictObject({ path }),
-    output: z.object({ state, report: z.array(z.string()) }),
-  },
 
   'demos.list': {
     input: nothing,

@@ -15,6 +15,10 @@ test('values with byte arrays come back as they went', () => {
   );
 });
 
+test('a buffer of Node passes as bytes like any other array', () => {
+  expect(decode(encode({ bytes: Buffer.from([7, 8]) }))).toEqual({ bytes: new Uint8Array([7, 8]) });
+});
+
 test('bytes that are no message are refused, whatever they are', () => {
   const whole = encode({ entries: [{ key: 'a', bytes: new Uint8Array([1, 2, 3]) }] });
   for (let cut = 0; cut < whole.length; cut += 1) expect(() => decode(whole.subarray(0, cut))).toThrow();

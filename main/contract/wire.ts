@@ -10,8 +10,10 @@ const MARK = '$bytes';
 export function encode(value: unknown): Uint8Array<ArrayBuffer> {
   const blobs: Uint8Array[] = [];
   let total = 0;
-  const text = JSON.stringify(value, (_key, part: unknown) => {
-    if (!(part instanceof Uint8Array)) return part;
+  // Looked up in its holder: some byte arrays would turn themselves into lists of numbers first.
+  const text = JSON.stringify(value, function (this: Record<string, unknown>, key, given: unknown) {
+    const part = this[key];
+    if (!(part instanceof Uint8Array)) return given;
     const at = total;
     blobs.push(part);
     total += part.length;

@@ -1,4 +1,4 @@
-import { join } from 'node:path';
+import { join, resolve } from 'node:path';
 import { startLoopbackHost } from '../loopback/host.ts';
 import { createSessions } from '../session/sessions.ts';
 import { userDataFolder } from '../user/folder.ts';
@@ -25,6 +25,7 @@ export async function serve(
   const host = await startLoopbackHost({
     sessions,
     page,
+    files: options.files.map((file) => resolve(file)),
     port: options.port,
     idleMs: options.idleMs,
     onIdle: () => void stop(),

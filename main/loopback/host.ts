@@ -13,6 +13,8 @@ export interface LoopbackSettings {
   readonly sessions: Sessions;
   /** Folder of the built page. */
   readonly page: string;
+  /** Files to open in the first window. */
+  readonly files?: readonly string[];
   /** 0 or absent takes a free one. */
   readonly port?: number;
   /** How long to stay with no window, ms; absent or 0 stays for ever. */
@@ -45,6 +47,7 @@ export async function startLoopbackHost(settings: LoopbackSettings): Promise<Loo
   const strangers = new Bucket(LIMITS.strangerRate, LIMITS.strangerBurst);
   const own = new Bucket(LIMITS.ownRate, LIMITS.ownBurst);
   let guard: Guard;
+  const first = [...(settings.files ?? [])].slice(0, 1);
   let receiving = 0;
 
   let idle: NodeJS.Timeout | undefined;
@@ -170,7 +173,9 @@ export async function startLoopbackHost(settings: LoopbackSettings): Promise<Loo
       if (path === EVENTS_PATH) {
         if (method !== 'GET') return refuse(request, response, 405);
         if (!guard.originIsOurs(request, false)) return refuse(request, response, 403);
-        return streams.start(window, response, PAGE_HEADERS);
+        streams.start(window, response, PAGE_HEADERS);
+        for (const file of first.splice(0)) sessions.open(window, file);
+        return;
       }
       if (method !== 'POST') return refuse(request, response, 405);
       if (!guard.originIsOurs(request, true)) return refuse(request, response, 403);

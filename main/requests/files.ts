@@ -1,12 +1,12 @@
-import { open, readdir, stat } from 'node:fs/promises';
+import { readdir, stat } from 'node:fs/promises';
 import { homedir } from 'node:os';
 import { basename, dirname, extname, join, resolve } from 'node:path';
 import { replaceFile } from '../../db/place/replace.ts';
 import { Problem } from '../../solver/problem/problem.ts';
+import { readBytes } from '../files/read.ts';
 import type { Handlers } from './handlers.ts';
 
 const MOST_LISTED = 5000;
-const MOST_READ = 64 * 1024 * 1024;
 
 /** A path as the person meant it: "~" is their own folder, and it must be complete. */
 export function wholePath(path: string): string {
@@ -57,7 +57,7 @@ export const fileRequests: Handlers<'files.list' | 'files.read' | 'files.write'>
   },
   'files.read': async (_session, input) => {
     const path = wholePath(input.path);
-    return { name: basename(path), bytes: await readBounded(path, MOST_READ) };
+    return { name: basename(path), bytes: await readBytes(path) };
   },
   'files.write': async (_session, input) => {
     const path = wholePath(input.path);
@@ -65,25 +65,3 @@ export const fileRequests: Handlers<'files.list' | 'files.read' | 'files.write'>
     return { path };
   },
 };
-
-/** The bytes of an ordinary file of at most `most` bytes. */
-async function readBounded(path: string, most: number): Promise<Uint8Array> {
-  const gone = (): never => {
-    throw new Problem(
-      'not-readable',
-      'This file cannot be read.',
-      path,
-      'Check that it is there and yours to read.',
-    );
-  };
-  const there = await stat(path).catch(gone);
-  if (!there.isFile()) gone();
-  if (there.size > most)
-    throw new Problem('too-many', 'This file is larger than 64 MB.', path, 'Give a smaller one.');
-  const file = await open(path, 'r').catch(gone);
-  try {
-    return new Uint8Array(await file.readFile());
-  } finally {
-    await file.close();
-  }
-}

@@ -1,7 +1,8 @@
 import { z } from 'zod';
 import { Problem } from '../../solver/problem/problem.ts';
-import { REQUESTS, type Refusal, type Reply, type RequestName } from '../contract/contract.ts';
+import { REQUESTS, type Reply, type RequestName } from '../contract/contract.ts';
 import { decode, encode } from '../contract/wire.ts';
+import { refusal } from '../session/refusal.ts';
 import type { Session } from '../session/session.ts';
 import { HANDLERS } from './handlers.ts';
 
@@ -11,7 +12,12 @@ export async function handle(
   name: string,
   body: Uint8Array,
 ): Promise<Uint8Array<ArrayBuffer>> {
-  return encode(await reply(session, name, body));
+  const answer = await reply(session, name, body);
+  try {
+    return encode(answer);
+  } catch (error) {
+    return encode({ ok: false, problem: refusal(error) });
+  }
 }
 
 async function reply(session: Session, name: string, body: Uint8Array): Promise<Reply> {
@@ -37,23 +43,4 @@ function isRequest(name: string): name is RequestName {
 function says(error: z.ZodError): string {
   const text = z.prettifyError(error).replaceAll(/\s+/g, ' ');
   return `The request cannot be read: ${text.slice(0, 300)}.`;
-}
-
-/** What a page may be told of an error: a problem whole, anything else only that it happened. */
-export function refusal(error: unknown): Refusal {
-  if (error instanceof Problem)
-    return { kind: error.kind, what: error.what, where: error.where, remedy: error.remedy };
-  if (error instanceof SyntaxError || error instanceof RangeError)
-    return {
-      kind: 'format',
-      what: 'The request cannot be read.',
-      where: '',
-      remedy: 'Reload the page and try again.',
-    };
-  return {
-    kind: 'output',
-    what: 'The program could not do this; what was acknowledged is kept.',
-    where: '',
-    remedy: 'Try again; if it fails again, save the project under another name and report what you did.',
-  };
 }

@@ -16,7 +16,7 @@ export type Handler<N extends RequestName> = (
 export type Handlers<N extends RequestName> = { readonly [K in N]: Handler<K> };
 
 /** Every request of the contract that a window's thread answers; `files.choose` is the host's own. */
-export const HANDLERS = {
+export const HANDLERS: Handlers<Exclude<RequestName, 'files.choose'>> = {
   ...aboutRequests,
   ...fileRequests,
   ...keptRequests,

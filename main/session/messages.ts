@@ -12,6 +12,8 @@ export interface SessionSettings {
 
 export type ToWorker =
   | { readonly kind: 'request'; readonly id: number; readonly name: string; readonly body: Uint8Array }
+  /** Open a file that the system or the command line names. */
+  | { readonly kind: 'open'; readonly path: string }
   /** Close the project and end. */
   | { readonly kind: 'end' };
 

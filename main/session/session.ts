@@ -1,9 +1,13 @@
+import { basename, extname } from 'node:path';
 import { Workplace, type WorkplaceSettings } from '../../db/workplace.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
+import { readDescription } from '../../solver/chip/description.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import type { EventData, EventName, ProjectState } from '../contract/contract.ts';
-import { noteRecent } from '../user/recent.ts';
+import { readText } from '../files/read.ts';
+import { forgetRecent, noteRecent } from '../user/recent.ts';
 import type { SessionSettings } from './messages.ts';
+import { refusal } from './refusal.ts';
 
 /** What one window has open, in its own thread. */
 export class Session {
@@ -52,12 +56,26 @@ export class Session {
     return await this.#take(await Workplace.open(this.workplaceSettings, path));
   }
 
+  /** Opens what the system or the command line names, unasked by the page: a project or a description. */
+  async openUnasked(path: string): Promise<void> {
+    try {
+      const state = /\.json$/i.test(path)
+        ? await this.draft(readDescription(await readText(path), basename(path, extname(path))))
+        : await this.open(path);
+      this.emit('opened', { state });
+    } catch (error) {
+      this.emit('problem', refusal(error));
+    }
+  }
+
   async draft(chip: Chip): Promise<ProjectState> {
     return await this.#take(await Workplace.draft(this.workplaceSettings, chip));
   }
 
   async saveAs(path: string, replace: boolean): Promise<void> {
-    this.#open = await this.workplace.saveAs(path, replace);
+    const before = this.workplace;
+    this.#open = await before.saveAs(path, replace);
+    if (before.standing.mode === 'draft') await forgetRecent(this.settings.userData, before.path);
     await this.#noteRecent();
     this.emit('project', this.#open.standing);
   }
@@ -79,6 +97,10 @@ export class Session {
   }
 
   async #noteRecent(): Promise<void> {
-    if (this.#open) await noteRecent(this.settings.userData, this.#open.path).catch(() => undefined);
+    if (!this.#open) return;
+    const { path, standing } = this.#open;
+    const name = standing.mode === 'draft' ? standing.name : undefined;
+    // A list that cannot be written is no reason to fail what was asked for.
+    await noteRecent(this.settings.userData, path, name).catch(() => undefined);
   }
 }

@@ -20,6 +20,8 @@ export interface Sessions {
   listen(window: string, listener: EventListener): () => void;
   /** Sends an event to a window from the host itself. */
   emit(window: string, name: string, data: unknown): void;
+  /** Opens a file in a window; it hears of it by the event `opened` or `problem`. */
+  open(window: string, path: string): void;
   /** Closes the window's project and ends its thread. */
   end(window: string): Promise<void>;
   close(): Promise<void>;
@@ -118,6 +120,9 @@ export function createSessions(settings: SessionSettings): Sessions {
     },
     emit(window, name, data) {
       send(window, name, JSON.stringify(data));
+    },
+    open(name, path) {
+      post(windows.get(name) ?? start(name), { kind: 'open', path }, []);
     },
     async end(name) {
       const window = windows.get(name);

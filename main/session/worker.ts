@@ -15,8 +15,13 @@ let last: Promise<void> = Promise.resolve();
 
 async function take(message: ToWorker): Promise<void> {
   if (message.kind === 'end') {
-    await session.close();
+    // What cannot be closed properly stays in its log, which the next opening reads.
+    await session.close().catch(() => undefined);
     port.close();
+    return;
+  }
+  if (message.kind === 'open') {
+    await session.openUnasked(message.path);
     return;
   }
   const body = await handle(session, message.name, message.body);
