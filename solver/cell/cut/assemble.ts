@@ -5,7 +5,7 @@ import { siteCorners } from '../../chip/plan-corners.ts';
 import type { Drawing } from '../../chip/read-graph-drawing.ts';
 import type { Edge, Shape } from '../../mesh/mesh.ts';
 import type { CellShape } from '../shape.ts';
-import type { Hole } from './cores.ts';
+import type { Hole } from './sources.ts';
 import type { Span, SpanEnd } from './spans.ts';
 import { widthAt } from './width.ts';
 

@@ -1,6 +1,6 @@
 import type { Drawing } from '../../chip/read-graph-drawing.ts';
 import { decayLength, legLength, MERGE_TIGHT } from './bounds.ts';
-import type { Core, Sources } from './cores.ts';
+import type { Core, Sources } from './sources.ts';
 import type { CutOptions } from './spec.ts';
 import { widthAt } from './width.ts';
 

@@ -1,66 +1,81 @@
 import type { Chip } from '../../chip/chip.ts';
 import { TOUCH } from '../../chip/geometry/tolerance.ts';
-import type { Graph, Site } from '../../chip/graph.ts';
+import type { Graph } from '../../chip/graph.ts';
 import { type Drawing, drawingOf } from '../../chip/read-graph-drawing.ts';
 import type { Finding } from '../../problem/finding.ts';
-import { assemble, type Ground, type Mouth } from './assemble.ts';
-import { BEND_TURN, LARGEST, MERGE, STEP } from './bounds.ts';
-import { cluster } from './clusters.ts';
-import { findCores, type Hole, type Sources } from './cores.ts';
+import { assemble, type Mouth, type Part } from './assemble.ts';
+import { LARGEST, MERGE } from './bounds.ts';
+import { type Clusters, cluster } from './clusters.ts';
+import { findCores } from './cores.ts';
+import { type Draft, draftOf, leftIdeal, type NamedPart, Names } from './drafts.ts';
 import { layDucts, Nodes } from './ducts.ts';
-import { type Hold, holdsOf } from './holds.ts';
-import { barriersOf, laySpans, type Span } from './spans.ts';
-import type { CellFace, CellKind, CellSpec, Cut, CutOptions } from './spec.ts';
+import { groundsOf } from './grounds.ts';
+import { holdsOf } from './holds.ts';
+import type { Sources } from './sources.ts';
+import { barriersOf, laySpans, type Span, type Spans } from './spans.ts';
+import type { CellFace, CellSpec, Cut, CutOptions } from './spec.ts';
+
+const DEFAULTS: CutOptions = { largest: LARGEST, mergeWithin: MERGE, leave: new Map() };
 
 /**
  * Where cells are: around every junction, corner, tight bend, step of width, steep taper, chamber and
  * hole, with faces far enough out that flow there is developed, closer ones merged into one cell; and the
  * ducts that are left between. What cannot be one cell is left ideal, with a finding that says why.
  */
-export function cutCells(chip: Chip, graph: Graph, options: CutOptions = DEFAULTS): Cut {
+export function cutCells(chip: Chip, graph: Graph, options: Partial<CutOptions> = {}): Cut {
+  const all = { ...DEFAULTS, ...options };
   const drawing = drawingOf(chip);
-  const findings: Finding[] = [];
   const found = findCores(chip, graph, drawing);
   dropPortedJoints(drawing, graph, found);
-  const clusters = cluster(drawing, found, options);
-  const spans = laySpans(drawing, graph, clusters, options);
+  const clusters = cluster(drawing, found, all);
+  const spans = laySpans(drawing, graph, clusters, all);
   const holds = holdsOf(graph, chip.channels.length);
   const grounds = groundsOf(drawing, graph, found, clusters.of, spans.byChannel, holds);
-  const drafts: Draft[] = [];
-  const solved = new Set<number>();
+  const findings: Finding[] = [];
+  const names = new Names();
+  const kept: Kept[] = [];
   for (const [number, ground] of grounds) {
-    const draft = draftOf(drawing, graph, found, clusters.of, number, ground);
-    const pierced = spans.pierced.get(number);
-    let reason = '';
-    if (pierced !== undefined) {
-      const id = graph.sites[pierced]!.ports[0];
-      reason = `port ${id} sits in its midst without a hole; give port ${id} a diameter`;
-    } else if (clusters.size[number]! > options.largest) {
-      reason = `it is about ${Math.round(clusters.size[number]!)} channel widths in size, above ${options.largest}; draw its parts further apart`;
-    } else {
-      const parts = assemble(drawing, graph, ground, draft.origin);
-      if (parts) draft.parts.push(...parts);
-      else reason = 'another channel comes too close to one of its arms';
+    const draft = draftOf(drawing, graph, found, clusters.of, number, ground, names);
+    const parts = partsOf(drawing, graph, draft, clusters, spans, all);
+    if (typeof parts === 'string') {
+      findings.push(leftIdeal(draft, parts));
+      continue;
     }
-    if (reason === '') solved.add(number);
-    else findings.push(leftIdeal(draft, reason));
-    drafts.push(draft);
+    const named = names.parts(draft, parts, graph);
+    const left = named.map((p) => all.leave.get(p.name)).find((reason) => reason !== undefined);
+    if (left === undefined) kept.push({ draft, parts: named });
+    else findings.push(leftIdeal(draft, left));
   }
-  const kept = drafts.filter((d) => solved.has(d.number));
-  return finish(drawing, graph, kept, spans.byChannel, solved, findings);
+  return finish(drawing, graph, kept, spans.byChannel, findings);
 }
 
-const DEFAULTS: CutOptions = { largest: LARGEST, mergeWithin: MERGE };
+interface Kept {
+  readonly draft: Draft;
+  readonly parts: readonly NamedPart[];
+}
 
-/** A cell before nodes are numbered. */
-interface Draft {
-  readonly number: number;
-  readonly ground: Ground;
-  readonly origin: readonly [number, number];
-  readonly kind: CellKind;
-  /** Name of the first site inside; '' where there is none. */
-  readonly site: string;
-  readonly parts: { shape: CellSpec['shape']; mouths: readonly Mouth[] }[];
+/** The cell's parts, or why it has to be left ideal. */
+function partsOf(
+  drawing: Drawing,
+  graph: Graph,
+  draft: Draft,
+  clusters: Clusters,
+  spans: Spans,
+  { largest }: CutOptions,
+): Part[] | string {
+  const pierced = spans.pierced.get(draft.number);
+  if (pierced !== undefined) {
+    const id = graph.sites[pierced]!.ports[0];
+    return `port ${id} sits in its midst without a hole; give port ${id} a diameter`;
+  }
+  const size = clusters.size[draft.number]!;
+  if (size > largest) {
+    return `it is about ${Math.round(size)} channel widths in size, above ${largest}; draw its parts further apart`;
+  }
+  return (
+    assemble(drawing, graph, draft.ground, draft.origin) ??
+    'another channel comes too close to one of its arms'
+  );
 }
 
 /** A port without a hole where two channels go straight on: a node, no joint to be reached over. */
@@ -79,166 +94,40 @@ function dropPortedJoints(drawing: Drawing, graph: Graph, found: Sources): void 
   found.cores.push(...kept);
 }
 
-function groundsOf(
-  drawing: Drawing,
-  graph: Graph,
-  found: Sources,
-  of: Int32Array,
-  byChannel: readonly (readonly Span[])[],
-  holds: readonly (readonly Hold[])[],
-): Map<number, Ground> {
-  interface Draftable extends Ground {
-    readonly spans: Span[];
-    readonly chambers: number[];
-    readonly holes: Hole[];
-    readonly sites: number[];
-  }
-  const grounds = new Map<number, Draftable>();
-  byChannel.forEach((list, channel) => {
-    for (const span of list) {
-      const layer = drawing.layerOf[channel]!;
-      const ground = grounds.get(span.cluster) ?? { layer, spans: [], chambers: [], holes: [], sites: [] };
-      grounds.set(span.cluster, ground);
-      ground.spans.push(span);
-      for (const hold of holds[channel]!) {
-        // at a port the cell ends on its site; at an end wall the site is inside
-        const below = span.high.kind === 'wall' ? TOUCH : -TOUCH;
-        const above = span.low.kind === 'wall' ? TOUCH : -TOUCH;
-        const inside = hold.low < span.high.s + below && hold.high > span.low.s - above;
-        if (inside && !ground.sites.includes(hold.site)) ground.sites.push(hold.site);
-      }
-    }
-  });
-  const siteOfChamber = new Map(graph.sites.flatMap((s, i) => s.chambers.map((id) => [id, i] as const)));
-  for (const [source, chambers] of found.chambers) {
-    const ground = grounds.get(of[source]!);
-    if (!ground) continue;
-    ground.chambers.push(...chambers);
-    for (const i of chambers) {
-      const site = siteOfChamber.get(drawing.chip.chambers[i]!.id)!;
-      if (!ground.sites.includes(site)) ground.sites.push(site);
-    }
-  }
-  for (const [source, holes] of found.holesOf) {
-    const ground = grounds.get(of[source]!);
-    for (const k of holes) {
-      const hole = found.holes[k]!;
-      if (ground && !ground.holes.includes(hole)) ground.holes.push(hole);
-    }
-  }
-  for (const ground of grounds.values()) ground.sites.sort((a, b) => a - b);
-  return grounds;
-}
-
-function draftOf(
-  drawing: Drawing,
-  graph: Graph,
-  found: Sources,
-  of: Int32Array,
-  number: number,
-  ground: Ground,
-): Draft {
-  const sites = ground.sites.map((i) => graph.sites[i]!).filter((s) => s.kind !== 'end');
-  const first = ground.spans[0]!;
-  const at = sites[0]?.at ?? drawing.placeAt(first.channel, (first.core[0] + first.core[1]) / 2);
-  const steep = found.taper.some((taper, source) => taper && of[source] === number);
-  return {
-    number,
-    ground,
-    origin: [Math.round(at[0]), Math.round(at[1])],
-    kind: sites.length > 0 ? siteKind(graph, sites) : steep ? 'step' : 'bend',
-    site: sites[0]?.name ?? '',
-    parts: [],
-  };
-}
-
-function siteKind(graph: Graph, sites: readonly Site[]): CellKind {
-  for (const kind of ['chamber', 'via'] as const) if (sites.some((s) => s.kind === kind)) return kind;
-  if (sites.some((s) => s.kind === 'junction' && s.arms.length !== 2)) return 'junction';
-  if (sites.some((s) => s.kind === 'port')) return 'port';
-  const [a, b] = sites[0]!.arms.map(({ piece, end }) => {
-    const p = graph.pieces[piece]!;
-    const k = end === 'from' ? 0 : p.path.length - 1;
-    const n = end === 'from' ? 1 : k - 1;
-    const dx = p.path[n]!.x - p.path[k]!.x;
-    const dy = p.path[n]!.y - p.path[k]!.y;
-    return { width: p.width[end === 'from' ? 0 : 1], dx, dy };
-  });
-  if (!a || !b) return 'junction';
-  if (Math.abs(a.width - b.width) > STEP * Math.max(a.width, b.width)) return 'step';
-  const turn = Math.abs(Math.atan2(a.dx * b.dy - a.dy * b.dx, -(a.dx * b.dx + a.dy * b.dy)));
-  return turn > BEND_TURN ? 'bend' : 'junction';
-}
-
-function leftIdeal(draft: Draft, reason: string): Finding {
-  const [why, remedy] = reason.split('; ');
-  const name = draft.site || 'a bend';
-  return {
-    kind: 'cell-ideal',
-    severity: 'warn',
-    where: draft.site,
-    says: `The flow in ${name} was not solved in three dimensions, because ${why}; it counts as an ideal junction.`,
-    do: remedy
-      ? `${remedy[0]!.toUpperCase()}${remedy.slice(1)}.`
-      : 'Leave more room between the channels there.',
-    at: [draft.origin[0] * 1e-9, draft.origin[1] * 1e-9],
-  };
-}
-
 function finish(
   drawing: Drawing,
   graph: Graph,
-  drafts: readonly Draft[],
+  kept: readonly Kept[],
   byChannel: readonly (readonly Span[])[],
-  solved: ReadonlySet<number>,
   findings: readonly Finding[],
 ): Cut {
   const nodes = new Nodes(graph);
-  for (const d of drafts) for (const site of d.ground.sites) nodes.bury(site);
+  for (const { draft } of kept) for (const site of draft.ground.sites) nodes.bury(site);
   const pieces = firstPieces(graph, drawing.chip.channels.length);
-  const named = new Map<string, number>();
-  const counts = { bend: 0, step: 0 };
   const cells: CellSpec[] = [];
   const nameOf = new Map<number, string>();
-  for (const d of drafts) {
-    const plain = d.kind === 'step' ? 'step' : 'bend';
-    if (d.site === '') counts[plain]++;
-    const base = d.site || `${plain}:${counts[plain]}`;
-    nameOf.set(d.number, base);
-    for (const part of d.parts) {
-      const copies = (named.get(base) ?? 0) + 1;
-      named.set(base, copies);
+  for (const { draft, parts } of kept) {
+    nameOf.set(draft.number, draft.name);
+    for (const { name, kind, shape, mouths } of parts) {
       cells.push({
-        name: copies === 1 ? base : `${base}.${copies}`,
-        kind: d.kind,
-        sites: d.ground.sites,
-        layerIndex: d.ground.layer,
-        origin: d.origin,
-        shape: part.shape,
-        faces: part.mouths.map((mouth): CellFace => {
-          const { kind, s, width, centre, direction } = mouth;
-          return {
-            kind,
-            node: nodes.atMouth(mouth),
-            piece: pieceAt(graph, pieces, mouth),
-            s,
-            width,
-            centre,
-            direction,
-          };
+        name,
+        kind,
+        sites: draft.ground.sites,
+        layerIndex: draft.ground.layer,
+        origin: draft.origin,
+        shape,
+        faces: mouths.map((mouth): CellFace => {
+          const { kind: face, s, width, centre, direction } = mouth;
+          const piece = pieceAt(graph, pieces, mouth);
+          return { kind: face, node: nodes.atMouth(mouth), piece, s, width, centre, direction };
         }),
       });
     }
   }
-  const ducts = layDucts(drawing, graph, byChannel, solved, nameOf, nodes);
-  return {
-    cells,
-    ducts,
-    nodeCount: nodes.count,
-    portNode: nodes.ports(drawing.chip, graph),
-    siteNode: nodes.sites(),
-    findings,
-  };
+  const ducts = layDucts(drawing, graph, byChannel, nameOf, nodes);
+  const portNode = nodes.ports(drawing.chip, graph);
+  const siteNode = nodes.sites();
+  return { cells, ducts, nodeCount: nodes.count, portNode, siteNode, findings };
 }
 
 /** First piece of each channel; channels + 1. */

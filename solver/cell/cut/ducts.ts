@@ -3,7 +3,7 @@ import { TOUCH } from '../../chip/geometry/tolerance.ts';
 import type { Graph } from '../../chip/graph.ts';
 import type { Drawing } from '../../chip/read-graph-drawing.ts';
 import type { Mouth } from './assemble.ts';
-import type { Hole } from './cores.ts';
+import type { Hole } from './sources.ts';
 import type { Span } from './spans.ts';
 import type { DuctSpec } from './spec.ts';
 import { widthAt } from './width.ts';
@@ -72,12 +72,11 @@ export class Nodes {
   }
 }
 
-/** What cells leave of every piece, in path order. */
+/** What the cells (names by cluster) leave of every piece, in path order. */
 export function layDucts(
   drawing: Drawing,
   graph: Graph,
   byChannel: readonly (readonly Span[])[],
-  solved: ReadonlySet<number>,
   nameOf: ReadonlyMap<number, string>,
   nodes: Nodes,
 ): DuctSpec[] {
@@ -103,8 +102,8 @@ export function layDucts(
       });
     };
     for (const span of byChannel[c]!) {
-      if (!solved.has(span.cluster) || span.high.s <= s || span.low.s >= end) continue;
-      const name = nameOf.get(span.cluster)!;
+      const name = nameOf.get(span.cluster);
+      if (name === undefined || span.high.s <= s || span.low.s >= end) continue;
       const low = span.low.s;
       lay(Math.min(low, end), () => nodes.atCut(c, low), name);
       s = span.high.s;

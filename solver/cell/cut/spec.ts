@@ -71,4 +71,6 @@ export interface CutOptions {
   readonly largest: number;
   /** Places closer than this many decay lengths are one cell. */
   readonly mergeWithin: number;
+  /** Cells (by name) to be left ideal, and why: those that could not be solved. */
+  readonly leave: ReadonlyMap<string, string>;
 }

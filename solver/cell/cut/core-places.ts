@@ -1,0 +1,94 @@
+import type { Chip } from '../../chip/chip.ts';
+import { type Area, areasOverlap, cuts, disc, edgesNear, inArea, polygon } from '../../chip/geometry/area.ts';
+import { type Body, covers, halfAt, outline } from '../../chip/geometry/body.ts';
+import { nearest, pointAt } from '../../chip/geometry/curve.ts';
+import { TOUCH } from '../../chip/geometry/tolerance.ts';
+import { type Drawing, layerNumbers } from '../../chip/read-graph-drawing.ts';
+import { addSource, type Hole, type Sources, span } from './sources.ts';
+
+/** Chambers with all that opens into them. */
+export function chambers(chip: Chip, drawing: Drawing, found: Sources): void {
+  const layers = layerNumbers(chip);
+  const areas = chip.chambers.map((c) => polygon(c.outline));
+  const sources = areas.map(() => addSource(found));
+  chip.chambers.forEach((c, i) => {
+    const layer = layers.get(c.layer)!;
+    const source = sources[i]!;
+    found.chambers.set(source, [i]);
+    const { fillet } = chip.layers[layer]!;
+    for (const b of bodiesAt(drawing, areas[i]!, layer)) {
+      const corners = commonGround(areas[i]!, b);
+      span(found, b, corners, source, 1.5 * fillet);
+    }
+    found.holes.forEach((hole, k) => {
+      if (hole.layer === layer && areasOverlap(areas[i]!, hole.area)) addHole(found, source, k);
+    });
+  });
+}
+
+function addHole(found: Sources, source: number, hole: number): void {
+  const set = found.holesOf.get(source) ?? new Set();
+  found.holesOf.set(source, set.add(hole));
+}
+
+function bodiesAt(drawing: Drawing, area: Area, layer: number): Body[] {
+  const near: number[] = drawing.index?.search(area.minX, area.minY, area.maxX, area.maxY) ?? [];
+  return near
+    .filter((i) => drawing.layerOf[drawing.elements.channel[i]!] === layer)
+    .sort((p, q) => p - q)
+    .map((i) => drawing.body(i));
+}
+
+function commonGround(area: Area, b: Body): [number, number][] {
+  const points: [number, number][] = [];
+  for (const e of outline(b)) {
+    if (inArea(area, e.x0, e.y0)) points.push([e.x0, e.y0]);
+    for (const s of cuts(area, e)) points.push(pointAt(e, s));
+  }
+  for (const e of edgesNear(area, b.minX - TOUCH, b.minY - TOUCH, b.maxX + TOUCH, b.maxY + TOUCH)) {
+    if (covers(b, e.x0, e.y0)) points.push([e.x0, e.y0]);
+  }
+  return points;
+}
+
+/** A rim closer to a wall than this share of the half width leaves a sliver no mesh can fill. */
+const SLIVER = 0.06;
+
+/**
+ * Strips that reach under a hole: each its own source, for at the rim the pressure is the hole's. A hole
+ * that all but touches a wall is taken so much wider that it cuts it: what flowed in that gap is nothing.
+ */
+export function holeContacts(drawing: Drawing, found: Sources): void {
+  found.holes.forEach((hole, k) => {
+    const under = bodiesAt(drawing, hole.area, hole.layer);
+    for (const b of under) {
+      const { offset, half } = footOf(hole, b);
+      for (const gap of [half - offset, half + offset]) {
+        if (Math.abs(gap - hole.radius) < SLIVER * half) hole.radius = gap + SLIVER * half;
+      }
+    }
+    hole.area = disc(hole.x, hole.y, hole.radius);
+    for (const b of under) {
+      const corners = commonGround(hole.area, b);
+      if (corners.length === 0) continue;
+      // the rim bulges along the strip beyond where it meets the walls
+      const { d, offset, half } = footOf(hole, b);
+      const c = b.element.curve;
+      if (offset < half) {
+        for (const end of [d - hole.radius, d + hole.radius]) {
+          corners.push(pointAt(c, Math.min(Math.max(end, 0), c.length)));
+        }
+      }
+      const source = addSource(found);
+      addHole(found, source, k);
+      span(found, b, corners, source, 0);
+    }
+  });
+}
+
+/** Distance along an element to below a hole's centre, how far that lies from the centreline, and half the width. */
+function footOf(hole: Hole, b: Body): { d: number; offset: number; half: number } {
+  const d = nearest(b.element.curve, hole.x, hole.y);
+  const [x, y] = pointAt(b.element.curve, d);
+  return { d, offset: Math.hypot(x - hole.x, y - hole.y), half: halfAt(b.element, b.element.s0 + d) };
+}
