@@ -1,3 +1,5 @@
+import type { Profile } from './profile.ts';
+import type { Section } from './section.ts';
 import type { UnitSection } from './unit-section.ts';
 
 /** Changes whenever the same shape may give other numbers, so that kept sections are not mixed up. */
@@ -17,6 +19,10 @@ export interface KeptSection {
 export class SectionCache {
   private readonly limit: number;
   private readonly kept = new Map<string, KeptSection>();
+  private readonly recent = new WeakMap<
+    Profile,
+    Map<number, { readonly depth: number; readonly accuracy: number; readonly section: Section }[]>
+  >();
 
   constructor(limit = 4096) {
     this.limit = limit;
@@ -42,6 +48,25 @@ export class SectionCache {
     }
   }
 
+  /** The section of that very profile (by identity: a chip's profiles are immutable) and size. */
+  recall(profile: Profile, width: number, depth: number, accuracy: number): Section | undefined {
+    return this.recent
+      .get(profile)
+      ?.get(width)
+      ?.find((one) => one.depth === depth && one.accuracy === accuracy)?.section;
+  }
+
+  remember(profile: Profile, width: number, depth: number, accuracy: number, section: Section): void {
+    let widths = this.recent.get(profile);
+    if (!widths || widths.size >= this.limit) {
+      widths = new Map();
+      this.recent.set(profile, widths);
+    }
+    const list = widths.get(width);
+    if (list && list.length < MOST_DEPTHS) list.push({ depth, accuracy, section });
+    else widths.set(width, [{ depth, accuracy, section }]);
+  }
+
   get size(): number {
     return this.kept.size;
   }
@@ -63,6 +88,9 @@ export class SectionCache {
     return count;
   }
 }
+
+/** Depths and accuracies of one width that are remembered at a time. */
+const MOST_DEPTHS = 8;
 
 const nameOf = (key: string, accuracy: number): string => `${accuracy} ${key}`;
 

@@ -4,7 +4,7 @@ import { EQUILATERAL, equilateralSection } from './equilateral.ts';
 import type { Profile } from './profile.ts';
 import { rectangleSection } from './rectangle.ts';
 import type { Section } from './section.ts';
-import { type SectionOptions, shapeOf, solvedUnit } from './solved-unit.ts';
+import { ACCURACY, type SectionOptions, shapeOf, sharedSections, solvedUnit } from './solved-unit.ts';
 import { scaleSection } from './unit-section.ts';
 
 export type { Section } from './section.ts';
@@ -36,8 +36,13 @@ export function sectionOf(
       break;
     default:
   }
+  const { accuracy = ACCURACY, cache = sharedSections } = options;
+  const known = cache.recall(profile, width, depth, accuracy);
+  if (known) return known;
   const shape = shapeOf(profile, width, depth, where);
-  return scaleSection(shape, solvedUnit(shape, options, where));
+  const section = scaleSection(shape, solvedUnit(shape, options, where));
+  cache.remember(profile, width, depth, accuracy, section);
+  return section;
 }
 
 /** Throws unless width and depth are lengths that the profile can have. */

@@ -1,8 +1,8 @@
 import { expect, test } from 'vitest';
 import { verify } from '../../test/verify/row.ts';
-import { varyingConductance } from './conductance-at.ts';
 import { etchedShape } from './etched-shape.ts';
 import type { Profile } from './profile.ts';
+import { varyingResistance } from './resistance-at.ts';
 import { sectionOf } from './section-of.ts';
 import { solveSection } from './solve-section.ts';
 import { taperResistance } from './taper.ts';
@@ -24,15 +24,15 @@ for (const [profile, widths] of [
 ] as const) {
   verify(
     {
-      quantity: 'table of conductance against width, worst of a solve at other widths',
+      quantity: 'table of resistance against width, worst of a solve at other widths',
       check: 'exact',
       at: profile.kind,
       source: 'direct finite-element solutions with a proven bound of 2e-6',
       tolerance: 1e-5,
     },
     () => {
-      const table = varyingConductance(profile, '');
-      return Math.max(...widths.map((width) => relative(table.at(width, 1), direct(profile, width))));
+      const table = varyingResistance(profile, '');
+      return Math.max(...widths.map((width) => relative(1 / table.at(width, 1), direct(profile, width))));
     },
   );
 }

@@ -1,5 +1,5 @@
-import { varyingConductance } from './conductance-at.ts';
 import type { Profile } from './profile.ts';
+import { varyingResistance } from './resistance-at.ts';
 import { checkSize, sectionOf } from './section-of.ts';
 
 /**
@@ -22,10 +22,10 @@ export function taperResistance(
   if (w2 === w1 || profile.kind === 'polygon' || profile.kind === 'circle') {
     return length / sectionOf(profile, w1, depth, where).conductance;
   }
-  const conductance = varyingConductance(profile, where);
+  const resistance = varyingResistance(profile, where);
   const low = Math.min(w1, w2);
   const high = Math.max(w1, w2);
-  const breaks = [low, ...conductance.kinks(depth).filter((w) => w > low && w < high), high];
+  const breaks = [low, ...resistance.kinks(depth).filter((w) => w > low && w < high), high];
   let integral = 0;
   for (let i = 1; i < breaks.length; i += 1) {
     const span = Math.log(breaks[i] / breaks[i - 1]);
@@ -36,7 +36,7 @@ export function taperResistance(
       const middle = (2 * panel + 1) * half;
       for (let k = 0; k < NODES.length; k += 1) {
         const width = breaks[i - 1] * Math.exp(middle + half * NODES[k]);
-        sum += (WEIGHTS[k] * width) / conductance.at(width, depth);
+        sum += WEIGHTS[k] * width * resistance.at(width, depth);
       }
     }
     integral += sum * half;

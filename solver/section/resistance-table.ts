@@ -3,8 +3,8 @@ import { solveSection } from './solve-section.ts';
 import { sharedSections } from './solved-unit.ts';
 
 /**
- * Conductance of a family of shapes of one parameter (unit depth), as piecewise Chebyshev polynomials of
- * its logarithm. Each value is solved to a proven bound of VALUES; a piece is halved until its polynomial
+ * Resistance (1/conductance) of a family of shapes of one parameter (unit depth), as piecewise Chebyshev
+ * polynomials. Each value is solved to a proven bound of VALUES; a piece is halved until its polynomial
  * is cut off below CUT. Together they keep the table within 1e-5. Pieces are made when first asked for.
  */
 const VALUES = 7e-6;
@@ -20,7 +20,7 @@ interface Piece {
   halves: readonly [Piece, Piece] | null;
 }
 
-export class ConductanceTable {
+export class ResistanceTable {
   private readonly pieces: Piece[];
   private readonly shapeAt: (parameter: number) => SectionShape;
   private readonly where: string;
@@ -32,14 +32,14 @@ export class ConductanceTable {
     this.pieces = breaks.slice(1).map((to, i) => emptyPiece(breaks[i], to));
   }
 
-  /** m⁴ for a shape of depth 1 m; the parameter must lie within the table's range. */
+  /** m⁻⁴ for a shape of depth 1 m; the parameter must lie within the table's range. */
   at(parameter: number): number {
     let i = 0;
     while (i < this.pieces.length - 1 && parameter > this.pieces[i].to) i += 1;
     let piece = this.pieces[i];
     for (;;) {
       if (!piece.coefficients && !piece.halves) this.make(piece);
-      if (piece.coefficients) return Math.exp(clenshaw(piece, piece.coefficients, parameter));
+      if (piece.coefficients) return clenshaw(piece, piece.coefficients, parameter);
       const [low, high]: readonly [Piece, Piece] = piece.halves!;
       piece = parameter <= low.to ? low : high;
     }
@@ -50,11 +50,12 @@ export class ConductanceTable {
     const middle = (piece.from + piece.to) / 2;
     const half = (piece.to - piece.from) / 2;
     for (let k = 0; k < NODES; k += 1) {
-      values[k] = Math.log(this.solve(middle + half * Math.cos((Math.PI * (k + 0.5)) / NODES)));
+      values[k] = 1 / this.solve(middle + half * Math.cos((Math.PI * (k + 0.5)) / NODES));
     }
     const coefficients = chebyshev(values);
     const tail = Math.max(Math.abs(coefficients[NODES - 1]), Math.abs(coefficients[NODES - 2]));
-    if (tail <= CUT || half < SMALLEST) piece.coefficients = coefficients;
+    const least = values.reduce((a, b) => Math.min(a, b));
+    if (tail <= CUT * least || half < SMALLEST) piece.coefficients = coefficients;
     else piece.halves = [emptyPiece(piece.from, middle), emptyPiece(middle, piece.to)];
   }
 

@@ -1,33 +1,47 @@
-import { ConductanceTable } from './conductance-table.ts';
 import { ellipseConductance } from './ellipse.ts';
 import { checkWallAngle, etchedShape, LEAST_ANGLE, LONGEST_FLAT } from './etched-shape.ts';
 import type { Profile } from './profile.ts';
 import { rectangleConductance } from './rectangle.ts';
+import { ResistanceTable } from './resistance-table.ts';
 
 /**
- * Conductance of a profile as its mask width varies, fast enough for every place of every taper: closed
+ * Resistance of a profile as its mask width varies, fast enough for every place of every taper: closed
  * forms where there are any; else a table in the shape's one parameter, made once per profile, and exact
  * scaling beyond it (a closed V grows with the fourth power of its width, a flat middle like plates).
  */
-export interface VaryingConductance {
-  /** m⁴; metres. */
+export interface VaryingResistance {
+  /** Per length and µ, m⁻⁴: 1/conductance; metres. */
   at(width: number, depth: number): number;
-  /** Widths between which the conductance is smooth. */
+  /** Widths between which it is smooth. */
   kinks(depth: number): readonly number[];
 }
 
-export function varyingConductance(
+export function varyingResistance(
   profile: Exclude<Profile, { kind: 'polygon' | 'circle' }>,
   where: string,
-): VaryingConductance {
+): VaryingResistance {
+  const known = made.get(profile);
+  if (known) return known;
+  const varying = makeVarying(profile, where);
+  made.set(profile, varying);
+  return varying;
+}
+
+/** By identity: the profiles of a chip are immutable. */
+const made = new WeakMap<Profile, VaryingResistance>();
+
+function makeVarying(
+  profile: Exclude<Profile, { kind: 'polygon' | 'circle' }>,
+  where: string,
+): VaryingResistance {
   switch (profile.kind) {
     case 'rectangle':
-      return { at: rectangleConductance, kinks: none };
+      return { at: (width, depth) => 1 / rectangleConductance(width, depth), kinks: none };
     case 'ellipse':
-      return { at: ellipseConductance, kinks: none };
+      return { at: (width, depth) => 1 / ellipseConductance(width, depth), kinks: none };
     case 'rounded': {
       const table = tableOf('rounded', FLATS, (flat) => etchedShape(profile, flat, 1, where), where);
-      return { at: (width, depth) => depth ** 4 * flatConductance(table, width / depth), kinks: none };
+      return { at: (width, depth) => flatResistance(table, width / depth) / fourth(depth), kinks: none };
     }
     case 'triangle': {
       const table = tableOf(
@@ -40,7 +54,7 @@ export function varyingConductance(
         at(width, depth) {
           // Throws where the triangle is too thin to be solved.
           if (Math.abs(Math.log(width / depth)) > LID_LOG) etchedShape(profile, width, depth, where);
-          return depth ** 4 * table.at(Math.log(width / depth));
+          return table.at(Math.log(width / depth)) / fourth(depth);
         },
         kinks: none,
       };
@@ -50,14 +64,14 @@ export function varyingConductance(
       const lean = 1 / Math.tan((profile.wallAngle * Math.PI) / 180);
       const shapeAt = (flat: number) => etchedShape(profile, flat + 2 * lean, 1, where);
       const table = tableOf(`trapezoid ${profile.wallAngle}`, FLATS, shapeAt, where);
-      // The closed V: its conductance per fourth power of its width.
+      // The closed V: its resistance times the fourth power of its width.
       let closed = 0;
       return {
         at(width, depth) {
           const flat = width / depth - 2 * lean;
-          if (flat > 0) return depth ** 4 * flatConductance(table, flat);
-          if (closed === 0) closed = table.at(0) / (2 * lean) ** 4;
-          return closed * width ** 4;
+          if (flat > 0) return flatResistance(table, flat) / fourth(depth);
+          if (closed === 0) closed = table.at(0) * fourth(2 * lean);
+          return closed / fourth(width);
         },
         kinks: (depth) => [2 * lean * depth],
       };
@@ -73,23 +87,26 @@ const LID_LOGS = [-LID_LOG + Math.log(4), -2.5, -1.5, -0.75, 0, 0.75, 1.5, 2.5, 
 
 const none = (): readonly number[] => [];
 
-function flatConductance(table: ConductanceTable, flat: number): number {
-  return flat <= LONGEST_FLAT ? table.at(flat) : table.at(LONGEST_FLAT) + (flat - LONGEST_FLAT) / 12;
+const fourth = (x: number): number => x * x * (x * x);
+
+function flatResistance(table: ResistanceTable, flat: number): number {
+  if (flat <= LONGEST_FLAT) return table.at(flat);
+  return 1 / (1 / table.at(LONGEST_FLAT) + (flat - LONGEST_FLAT) / 12);
 }
 
-const tables = new Map<string, ConductanceTable>();
+const tables = new Map<string, ResistanceTable>();
 const MOST_TABLES = 256;
 
 function tableOf(
   name: string,
   breaks: readonly number[],
-  shapeAt: ConstructorParameters<typeof ConductanceTable>[1],
+  shapeAt: ConstructorParameters<typeof ResistanceTable>[1],
   where: string,
-): ConductanceTable {
+): ResistanceTable {
   const known = tables.get(name);
   if (known) return known;
   if (tables.size >= MOST_TABLES) tables.clear();
-  const table = new ConductanceTable(breaks, shapeAt, where);
+  const table = new ResistanceTable(breaks, shapeAt, where);
   tables.set(name, table);
   return table;
 }
