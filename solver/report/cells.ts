@@ -1,5 +1,5 @@
 import { inertiaShare } from '../cell/inertia.ts';
-import { peakShear } from '../cell/peak.ts';
+
 import type { Chip } from '../chip/chip.ts';
 import type { CellResult, PieceResult } from '../chip/result.ts';
 import type { PlacedCell } from '../lump/layout.ts';
@@ -7,6 +7,7 @@ import type { Lumped } from '../lump/lump.ts';
 import { depthOf, NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
+import { patternPeak } from './cell-peaks.ts';
 
 /** Every cell with what flows in it; one that is not solved has no matrix and no peak. */
 export function cellResults(
@@ -41,7 +42,7 @@ function cellResult(
   if (!solution) return { ...base, portMatrix: [], peakWallShear: null, peakAt: null, accuracy: 1 };
   const { matrix } = lumped.spec.blocks[lumped.cellBlock[index]];
   const pressures = spec.faces.map((face) => flow.pressure[face.node] || 0);
-  const peak = peakShear(solution, pressures);
+  const peak = patternPeak(solution, pressures);
   return {
     ...base,
     portMatrix: Array.from({ length: n }, (_, i) => Array.from(matrix.subarray(i * n, (i + 1) * n))),
