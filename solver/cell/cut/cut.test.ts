@@ -262,6 +262,13 @@ describe('where cells are', () => {
     expect(ducts(graph, cut)).toHaveLength(3);
   });
 
+  test('an end taken on to another centreline lies in the cell', () => {
+    const { graph, cut } = read({ channels: [main, up('b', 1000, 40)], ports: [port('i', [0, 0])] });
+    expect(cut.cells[0]!.faces).toHaveLength(3);
+    expect(ducts(graph, cut)).toContain(`b#1 junction:1 end:2 ${at(1000 - 50 - LEG)}`);
+    expect(ducts(graph, cut)).toHaveLength(3);
+  });
+
   test('a via is one place for the cells of both layers', () => {
     const u = channel(
       'u',

@@ -33,9 +33,10 @@ export function cutCells(chip: Chip, graph: Graph, options: Partial<CutOptions> 
   const grounds = groundsOf(drawing, graph, found, clusters.of, spans.byChannel, holds);
   const findings: Finding[] = [];
   const names = new Names();
+  const steep = new Set(found.taper.flatMap((taper, source) => (taper ? [clusters.of[source]!] : [])));
   const kept: Kept[] = [];
   for (const [number, ground] of grounds) {
-    const draft = draftOf(drawing, graph, found, clusters.of, number, ground, names);
+    const draft = draftOf(drawing, graph, number, ground, steep.has(number), names);
     const parts = partsOf(drawing, graph, draft, clusters, spans, all);
     if (typeof parts === 'string') {
       findings.push(leftIdeal(draft, parts));
@@ -141,13 +142,15 @@ function firstPieces(graph: Graph, channels: number): Int32Array {
 /** The piece that goes on from a cut, on the side away from the cell. */
 function pieceAt(graph: Graph, first: Int32Array, mouth: Mouth): number {
   if (mouth.kind === 'rim') return -1;
-  const inside = (k: number) => {
-    const p = graph.pieces[k]!;
-    return p.start - TOUCH <= mouth.s && mouth.s <= p.stop + TOUCH;
-  };
-  let found = -1;
-  for (let k = first[mouth.channel]!; k < first[mouth.channel + 1]!; k++) {
-    if (inside(k) && (found < 0 || mouth.side > 0)) found = k;
+  let low = first[mouth.channel]!;
+  let high = first[mouth.channel + 1]! - 1;
+  if (high < low) return -1;
+  // the last piece that starts before the cut; on the cut itself, the one away from the cell
+  const beyond = mouth.side > 0 ? TOUCH : -TOUCH;
+  while (low < high) {
+    const middle = (low + high + 1) >> 1;
+    if (graph.pieces[middle]!.start <= mouth.s + beyond) low = middle;
+    else high = middle - 1;
   }
-  return found;
+  return low;
 }

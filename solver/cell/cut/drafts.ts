@@ -3,7 +3,6 @@ import type { Drawing } from '../../chip/read-graph-drawing.ts';
 import type { Finding } from '../../problem/finding.ts';
 import type { Ground, Part } from './assemble.ts';
 import { BEND_TURN, STEP } from './bounds.ts';
-import type { Sources } from './sources.ts';
 import type { CellKind } from './spec.ts';
 
 /** A cell before nodes are numbered. */
@@ -58,16 +57,14 @@ export class Names {
 export function draftOf(
   drawing: Drawing,
   graph: Graph,
-  found: Sources,
-  of: Int32Array,
   number: number,
   ground: Ground,
+  steep: boolean,
   names: Names,
 ): Draft {
   const sites = ground.sites.map((i) => graph.sites[i]!).filter((s) => s.kind !== 'end');
   const first = ground.spans[0]!;
   const at = sites[0]?.at ?? drawing.placeAt(first.channel, (first.core[0] + first.core[1]) / 2);
-  const steep = found.taper.some((taper, source) => taper && of[source] === number);
   const plain = steep ? 'step' : 'bend';
   return {
     number,

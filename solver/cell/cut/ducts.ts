@@ -81,8 +81,13 @@ export function layDucts(
   nodes: Nodes,
 ): DuctSpec[] {
   const ducts: DuctSpec[] = [];
+  let channel = -1;
+  let first = 0;
   graph.pieces.forEach((p, piece) => {
     const c = p.channelIndex;
+    const spans = byChannel[c]!;
+    if (c !== channel) first = 0;
+    channel = c;
     const end = p.stop - p.trim[1];
     let s = p.start + p.trim[0];
     let from: number | undefined;
@@ -101,16 +106,28 @@ export function layDucts(
         width: [widthAt(drawing, c, s), widthAt(drawing, c, stop)],
       });
     };
-    for (const span of byChannel[c]!) {
+    // spans behind this piece are behind all that follow
+    while (first < spans.length && top(spans[first]!) <= s) first++;
+    for (let k = first; k < spans.length && bottom(spans[k]!) < end; k++) {
+      const span = spans[k]!;
       const name = nameOf.get(span.cluster);
-      if (name === undefined || span.high.s <= s || span.low.s >= end) continue;
-      const low = span.low.s;
+      if (name === undefined) continue;
+      const low = bottom(span);
       lay(Math.min(low, end), () => nodes.atCut(c, low), name);
-      s = span.high.s;
+      s = top(span);
       from = span.high.kind === 'cut' ? nodes.atCut(c, s) : undefined;
       fromName = name;
     }
     lay(end, () => nodes.atSite(p.to), graph.sites[p.to]!.name);
   });
   return ducts;
+}
+
+/** Where a span ends; an end that was taken on to another centreline lies inside the cell with all that. */
+function bottom(span: Span): number {
+  return span.low.kind === 'wall' ? -Infinity : span.low.s;
+}
+
+function top(span: Span): number {
+  return span.high.kind === 'wall' ? Infinity : span.high.s;
 }

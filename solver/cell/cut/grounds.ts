@@ -23,17 +23,19 @@ export function groundsOf(
   }
   const grounds = new Map<number, Draftable>();
   byChannel.forEach((list, channel) => {
+    let start = 0;
     for (const span of list) {
       const layer = drawing.layerOf[channel]!;
       const ground = grounds.get(span.cluster) ?? { layer, spans: [], chambers: [], holes: [], sites: [] };
       grounds.set(span.cluster, ground);
       ground.spans.push(span);
-      for (const hold of holds[channel]!) {
-        // at a port the cell ends on its site; at an end wall the site is inside
-        const below = span.high.kind === 'wall' ? TOUCH : -TOUCH;
-        const above = span.low.kind === 'wall' ? TOUCH : -TOUCH;
-        const inside = hold.low < span.high.s + below && hold.high > span.low.s - above;
-        if (inside && !ground.sites.includes(hold.site)) ground.sites.push(hold.site);
+      // at a port the cell ends on its site; at an end wall the site is inside
+      const below = span.high.s + (span.high.kind === 'wall' ? TOUCH : -TOUCH);
+      const above = span.low.s - (span.low.kind === 'wall' ? TOUCH : -TOUCH);
+      const here = holds[channel]!;
+      while (start < here.length && here[start]!.high <= above) start++;
+      for (let k = start; k < here.length && here[k]!.low < below; k++) {
+        if (!ground.sites.includes(here[k]!.site)) ground.sites.push(here[k]!.site);
       }
     }
   });
