@@ -6,6 +6,7 @@ import { placeCells } from './lump/cells.ts';
 import { checkDrives } from './lump/floating.ts';
 import { cellLayout, idealLayout, type Layout } from './lump/layout.ts';
 import { lump } from './lump/lump.ts';
+import { settleThinning } from './lump/thinning.ts';
 import { emptyMemory, type Memory } from './memory.ts';
 import { report } from './report/report.ts';
 
@@ -29,8 +30,7 @@ export function solve(chip: Chip, options: SolveOptions = {}, memory: Memory = e
   const graph = memory.graph(chip);
   const drives = checkDrives(chip, graph, fluid.density);
   const layout = options.junctions === 'ideal' ? idealLayout(graph) : solvedLayout(chip, options, memory);
-  const lumped = lump(chip, graph, layout, fluid, memory.lumps);
-  const flow = memory.network(lumped);
+  const { lumped, flow } = settleThinning(lump(chip, graph, layout, fluid, memory.lumps), memory.network);
   return report(chip, graph, fluid, lumped, flow, drives);
 }
 

@@ -20,6 +20,8 @@ export interface Lumped extends Layout {
   readonly cellBlock: Int32Array;
   /** Of every duct of the network, tubing included; null where all are linear. */
   readonly laws: readonly DuctFlowLaw[] | null;
+  /** Whether the fluid is shear-thinning. */
+  readonly thins: boolean;
   /** Pa s: the fluid's own, or for a shear-thinning one what its linear start is made with. */
   readonly viscosity: number;
   /** Drive of each port in the network, -1 where closed, in the chip's order of ports. */
@@ -95,6 +97,7 @@ export function lump(chip: Chip, graph: Graph, layout: Layout, fluid: Fluid, mem
     ducts,
     cellBlock,
     laws,
+    thins: fluid.shear !== undefined,
     viscosity,
     portDrive,
   };

@@ -22,7 +22,7 @@ export function cellResults(
     if (cell.solution?.sharp) findings.push(sharpFinding(chip, cell));
     return result;
   });
-  return { cells, findings: merged(findings) };
+  return { cells, findings: [...merged(findings), ...thinningNote(lumped)] };
 }
 
 function cellResult(
@@ -135,6 +135,20 @@ export function inertiaFindings(
       says: `Inertia, which creeping flow leaves out, shifts the flow through ${spec.name} by about ${(100 * worst.share).toPrecision(2)} %, more than its ${(100 * worst.cell.solution!.flowError).toPrecision(2)} % accuracy${count > 1 ? `; ${count} junctions in all` : ''}.`,
       do: 'Take that as the error of the split there, or slow the flow.',
       at: [spec.origin[0] / NANOMETRES, spec.origin[1] / NANOMETRES],
+    },
+  ];
+}
+
+function thinningNote(lumped: Lumped): Finding[] {
+  const first = lumped.cells.find(({ solution }) => solution !== null);
+  if (!lumped.thins || !first) return [];
+  return [
+    {
+      kind: 'thinning-junction',
+      severity: 'note',
+      where: first.spec.name,
+      says: 'The fluid thins with shear, but each junction is solved with one viscosity, that of the channels around it.',
+      do: 'Take the wall shear at corners as a guide only: the true fluid is thinner there.',
     },
   ];
 }
