@@ -1,0 +1,169 @@
+import { type Placement, toCaller } from '../cell/canonical.ts';
+import type { CellFields, CellSolution } from '../cell/cell.ts';
+import { type FlowField, mixFields, pressuresOf } from '../cell/flow-field.ts';
+import { type CellPattern, cellPattern } from './cell-pattern.ts';
+import { type CellScan, scanCell } from './cell-scan.ts';
+import { huggingTraces, type Trace } from './cell-trace.ts';
+import type { Crossing, Hugging } from './crossing.ts';
+import { doseOf, type History } from './laws.ts';
+
+/** A solved cell with what flows through it. */
+export interface FlowingCell {
+  readonly solution: CellSolution;
+  /** m³/s into the cell at each face. */
+  readonly flow: ArrayLike<number>;
+  /** Pa s */
+  readonly viscosity: number;
+  /** Place of the shape's origin on the chip, m. */
+  readonly origin: readonly [number, number];
+  /** Width of each face, m. */
+  readonly faceWidth: readonly number[];
+  readonly peakWallShear: number | null;
+  /** How the slowest and fastest hundredths of the flow stand to its mean in the channels around. */
+  readonly slow: number;
+  readonly fast: number;
+}
+
+/** What was worked out for one pattern of flow through one solved shape. */
+interface Known {
+  readonly field: FlowField;
+  readonly scan: CellScan;
+  /** By face (of the solved copy) and radius in depths. */
+  readonly traces: Map<string, readonly Trace[]>;
+}
+
+const known = new WeakMap<CellFields, Map<string, Known>>();
+/** Patterns kept of one shape. */
+const MOST_PATTERNS = 400;
+const STANDING: Omit<Placement, 'face'> = { scale: 1, cos: 1, sin: 0, mirrored: false, x: 0, y: 0 };
+
+function patternOf(solution: CellSolution, fields: CellFields, pattern: CellPattern): Known {
+  let shapes = known.get(fields);
+  if (!shapes) {
+    shapes = new Map();
+    known.set(fields, shapes);
+  }
+  let found = shapes.get(pattern.key);
+  if (!found) {
+    if (shapes.size >= MOST_PATTERNS) shapes.clear();
+    const [{ face, scale }] = solution.placements;
+    const n = solution.faces;
+    const matrix = new Float64Array(n * n);
+    for (let i = 0; i < n; i += 1) {
+      for (let j = 0; j < n; j += 1) {
+        matrix[i * n + j] = solution.portMatrix[face[i] * n + face[j]] / scale ** 3;
+      }
+    }
+    const mixed = mixFields(fields, pressuresOf(matrix, n, pattern.flow));
+    const field = { ...mixed, placement: { ...STANDING, face: Int32Array.from({ length: n }, (_, i) => i) } };
+    found = { field, scan: scanCell(field), traces: new Map() };
+    shapes.set(pattern.key, found);
+  }
+  return found;
+}
+
+/**
+ * A cell as paths cross it: what its fluid meets on the whole, and the fastest stretching. Null where
+ * nothing flows or fields were not kept. Lengths go by the depth d of the solved shape, stresses by
+ * µ Q/d³, times by d³/Q.
+ */
+export class CellPaths {
+  readonly #cell: FlowingCell;
+  readonly #known: Known;
+  readonly #placement: Placement;
+  /** Pa and s that the solved copy's units stand for. */
+  readonly #stress: number;
+  readonly #time: number;
+
+  private constructor(cell: FlowingCell, through: number, known: Known) {
+    const [placement] = cell.solution.placements;
+    this.#cell = cell;
+    this.#known = known;
+    this.#placement = placement;
+    this.#stress = (cell.viscosity * through) / placement.scale ** 3;
+    this.#time = placement.scale ** 3 / through;
+  }
+
+  static of(cell: FlowingCell): CellPaths | null {
+    const { solution, flow } = cell;
+    if (!solution.fields) return null;
+    const { face } = solution.placements[0];
+    const pattern = cellPattern(Float64Array.from(face, (mine) => flow[mine]));
+    if (!pattern) return null;
+    let through = 0;
+    for (let i = 0; i < flow.length; i += 1) through += Math.max(0, flow[i]);
+    return new CellPaths(cell, through, patternOf(solution, solution.fields, pattern));
+  }
+
+  /** m³ */
+  get volume(): number {
+    return this.#known.scan.volume * this.#placement.scale ** 3;
+  }
+
+  get stretch(): NonNullable<Crossing['stretch']> {
+    const { rate, stress, x, y } = this.#known.scan.stretch;
+    const [px, py] = toCaller(this.#placement, x, y);
+    const { origin } = this.#cell;
+    return {
+      rate: rate / this.#time,
+      stress: stress * this.#stress,
+      at: [origin[0] + px, origin[1] + py],
+    };
+  }
+
+  /** Of what comes in by one face and leaves by another (from 0, as the cell was given). */
+  crossing(from: number, to: number): Crossing {
+    const { scan } = this.#known;
+    const time = scan.volume * this.#time;
+    const { slow, fast, peakWallShear } = this.#cell;
+    return {
+      time,
+      fast: time / fast,
+      slow: time / slow,
+      peakWallShear,
+      stretch: this.stretch,
+      dose: (exponent) => doseOf(scan.spread, exponent) * this.#stress ** exponent * this.#time,
+      history: () => this.#scaled(scan.spread),
+      hugging: (diameter) => this.#hugging(from, to, diameter),
+    };
+  }
+
+  #scaled({ stress, time }: History): History {
+    return {
+      stress: stress.map((value) => value * this.#stress),
+      time: time.map((value) => value * this.#time),
+    };
+  }
+
+  /** The worst of the paths along the walls that lead there; of all that enter, where none of them does. */
+  #hugging(from: number, to: number, diameter: number): Hugging | null {
+    const { faceWidth, solution } = this.#cell;
+    const radius = diameter / 2 / this.#placement.scale;
+    if (Math.min(solution.depth, faceWidth[from], faceWidth[to]) < diameter) return null;
+    const { face } = this.#placement;
+    const all = this.#traces(face.indexOf(from), radius);
+    const there = all.filter((trace) => trace.to === face.indexOf(to));
+    const paths = there.length > 0 ? there : all;
+    if (paths.length === 0) return null;
+    const worst = (value: (trace: Trace) => number): number => Math.max(...paths.map(value));
+    const hardest = paths.reduce((a, b) => (doseOf(b.history, 3) > doseOf(a.history, 3) ? b : a));
+    return {
+      time: worst(({ time }) => time) * this.#time,
+      peak: worst(({ peak }) => peak) * this.#stress,
+      dose: (exponent) =>
+        worst(({ history }) => doseOf(history, exponent)) * this.#stress ** exponent * this.#time,
+      history: () => this.#scaled(hardest.history),
+    };
+  }
+
+  #traces(face: number, radius: number): readonly Trace[] {
+    const { field, traces } = this.#known;
+    const key = `${face} ${radius}`;
+    let found = traces.get(key);
+    if (!found) {
+      found = huggingTraces(field, face, radius);
+      traces.set(key, found);
+    }
+    return found;
+  }
+}

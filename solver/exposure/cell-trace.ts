@@ -1,0 +1,195 @@
+import { depthValues } from '../cell/depth.ts';
+import { type FlowField, HALF } from '../cell/flow-field.ts';
+import { type Locator, locate, locatorOf, type Place } from '../cell/locate.ts';
+import { emptySample, type Sample, sampleAt } from '../cell/sample.ts';
+import type { Mesh } from '../mesh/mesh.ts';
+import type { History } from './laws.ts';
+
+/** A path through a cell of depth 1, viscosity 1 and a flow of 1 through it. */
+export interface Trace {
+  /** Face (from 0) by which it leaves; −1 where it came to rest inside. */
+  readonly to: number;
+  readonly history: History;
+  readonly time: number;
+  readonly peak: number;
+}
+
+/** Steps of a path, in sizes of the triangle that it is in. */
+const STEP = 0.5;
+const SHORTEST = 0.01;
+const LONGEST = 0.5;
+const MOST_STEPS = 3000;
+/** What a start is moved in from its face. */
+const INSIDE = 1e-4;
+
+/**
+ * Paths of a ball's centre that enters through a face one radius (in depths) off its walls: along floor and
+ * lid at five places across, along both side walls at two heights. The field is followed as fluid follows
+ * it; only floor and lid keep the ball at its distance.
+ */
+export function huggingTraces(field: FlowField, face: number, radius: number): Trace[] {
+  const walk = walker(field, radius);
+  const line = faceLine(field.mesh, face + 1);
+  const length = line.length;
+  if (length < 2 * radius || radius > HALF) return [];
+  const low = 1 - radius / HALF;
+  const starts: [number, number][] = [];
+  for (const along of [radius, length / 4, length / 2, (3 * length) / 4, length - radius]) {
+    starts.push([along, low]);
+  }
+  for (const along of [radius, length - radius]) starts.push([along, 0], [along, low / 2]);
+  const traces: Trace[] = [];
+  for (const [along, s] of starts) {
+    const [x, y] = line.at(along);
+    const trace = walk(x, y, s);
+    if (trace) traces.push(trace);
+  }
+  return traces;
+}
+
+/** A face as a line on the plan, moved in a hair. */
+function faceLine(
+  mesh: Mesh,
+  tag: number,
+): { readonly length: number; at(along: number): [number, number] } {
+  const from: number[] = [];
+  const chords: [ax: number, ay: number, bx: number, by: number][] = [];
+  let length = 0;
+  const edges = Array.from(mesh.boundaryTag.keys()).filter((e) => mesh.boundaryTag[e] === tag);
+  // Boundary edges follow one another; a face that wraps round the start of the list begins after its gap.
+  const gap = edges.findIndex((e, i) => {
+    const before = edges[(i + edges.length - 1) % edges.length];
+    return mesh.boundary[3 * before + 1] !== mesh.boundary[3 * e];
+  });
+  const ordered = gap > 0 ? [...edges.slice(gap), ...edges.slice(0, gap)] : edges;
+  for (const e of ordered) {
+    const [a, b, middle] = mesh.boundary.subarray(3 * e, 3 * e + 3);
+    for (const [p, q] of [
+      [a, middle],
+      [middle, b],
+    ]) {
+      from.push(length);
+      chords.push([mesh.x[p], mesh.y[p], mesh.x[q], mesh.y[q]]);
+      length += Math.hypot(mesh.x[q] - mesh.x[p], mesh.y[q] - mesh.y[p]);
+    }
+  }
+  return {
+    length,
+    at(along) {
+      let i = chords.length - 1;
+      while (i > 0 && from[i] > along) i -= 1;
+      const [ax, ay, bx, by] = chords[i];
+      const size = Math.hypot(bx - ax, by - ay);
+      const share = (along - from[i]) / size;
+      const nx = (-(by - ay) / size) * INSIDE;
+      const ny = ((bx - ax) / size) * INSIDE;
+      return [ax + share * (bx - ax) + nx, ay + share * (by - ay) + ny];
+    },
+  };
+}
+
+/** Follows the field by fourth-order Runge-Kutta steps in path length. */
+function walker(field: FlowField, radius: number): (x: number, y: number, s: number) => Trace | null {
+  const { mesh } = field;
+  const locator: Locator = locatorOf(mesh);
+  const place: Place = { triangle: -1, la: 0, lb: 0 };
+  const sample: Sample = emptySample();
+  const most = Math.max(0, 1 - radius / HALF);
+  const sizes = triangleSizes(mesh);
+  const read = (x: number, y: number, s: number): boolean => {
+    if (!locate(locator, x, y, place)) return false;
+    sampleAt(field, place, depthValues(field.depth, s), sample);
+    return true;
+  };
+  const speed = (): number => Math.hypot(sample.velocity[0], sample.velocity[1], sample.velocity[2]);
+  const slope = [new Float64Array(3), new Float64Array(3), new Float64Array(3), new Float64Array(3)];
+  /** Direction of the field at a place, into slope[k]. */
+  const direction = (x: number, y: number, s: number, k: number): boolean => {
+    if (!read(x, y, Math.min(most, Math.max(-most, s)))) return false;
+    const v = speed();
+    if (!(v > 0)) return false;
+    slope[k][0] = sample.velocity[0] / v;
+    slope[k][1] = sample.velocity[1] / v;
+    slope[k][2] = sample.velocity[2] / v / HALF;
+    return true;
+  };
+  const next = new Float64Array(3);
+  const step = (p: Float64Array, length: number): boolean => {
+    const [a, b, c, d] = slope;
+    const half = length / 2;
+    if (!direction(p[0] + half * a[0], p[1] + half * a[1], p[2] + half * a[2], 1)) return false;
+    if (!direction(p[0] + half * b[0], p[1] + half * b[1], p[2] + half * b[2], 2)) return false;
+    if (!direction(p[0] + length * c[0], p[1] + length * c[1], p[2] + length * c[2], 3)) return false;
+    for (let i = 0; i < 3; i += 1) next[i] = p[i] + (length / 6) * (a[i] + 2 * b[i] + 2 * c[i] + d[i]);
+    next[2] = Math.min(most, Math.max(-most, next[2]));
+    return read(next[0], next[1], next[2]);
+  };
+  return (x, y, s) => {
+    const p = Float64Array.of(x, y, Math.min(most, s));
+    if (!direction(p[0], p[1], p[2], 0)) return null;
+    const stress: number[] = [];
+    const time: number[] = [];
+    let whole = 0;
+    let peak = sample.strainRate;
+    let [before, speedBefore] = [sample.strainRate, speed()];
+    let reach = 0;
+    for (let count = 0; count < MOST_STEPS; count += 1) {
+      let length = Math.min(LONGEST, Math.max(SHORTEST, STEP * sizes[place.triangle]));
+      reach = length;
+      let ok = false;
+      for (let halving = 0; halving < 6 && !ok; halving += 1) {
+        ok = step(p, length);
+        if (!ok) length /= 2;
+      }
+      if (!ok) break;
+      const now = speed();
+      const dt = (2 * length) / (speedBefore + now);
+      whole += dt;
+      time.push(dt);
+      stress.push((before + sample.strainRate) / 2);
+      peak = Math.max(peak, sample.strainRate);
+      before = sample.strainRate;
+      speedBefore = now;
+      p.set(next);
+      if (!direction(p[0], p[1], p[2], 0)) break;
+    }
+    return {
+      to: faceNear(mesh, p[0], p[1], 2 * reach),
+      history: { stress: Float64Array.from(stress), time: Float64Array.from(time) },
+      time: whole,
+      peak,
+    };
+  };
+}
+
+/** Root of the area of each triangle. */
+function triangleSizes(mesh: Mesh): Float64Array {
+  return Float64Array.from({ length: mesh.triangles.length / 6 }, (_, t) => {
+    const [a, b, c] = mesh.triangles.subarray(6 * t, 6 * t + 3);
+    const abx = mesh.x[b] - mesh.x[a];
+    const aby = mesh.y[b] - mesh.y[a];
+    return Math.sqrt(
+      Math.abs(abx * (mesh.y[c] - mesh.y[a]) - (mesh.x[c] - mesh.x[a]) * aby) / 2,
+    );
+  });
+}
+
+/** Face (from 0) within reach of a place; −1 where there is none. */
+function faceNear(mesh: Mesh, x: number, y: number, reach: number): number {
+  let nearest = reach;
+  let face = -1;
+  for (let e = 0; e < mesh.boundaryTag.length; e += 1) {
+    if (mesh.boundaryTag[e] === 0) continue;
+    const [a, b] = mesh.boundary.subarray(3 * e, 3 * e + 2);
+    const dx = mesh.x[b] - mesh.x[a];
+    const dy = mesh.y[b] - mesh.y[a];
+    const share = ((x - mesh.x[a]) * dx + (y - mesh.y[a]) * dy) / (dx * dx + dy * dy);
+    const at = Math.min(1, Math.max(0, share));
+    const distance = Math.hypot(x - mesh.x[a] - at * dx, y - mesh.y[a] - at * dy);
+    if (distance < nearest) {
+      nearest = distance;
+      face = mesh.boundaryTag[e] - 1;
+    }
+  }
+  return face;
+}
