@@ -12,26 +12,30 @@ export const keptRequests: Handlers<
   | 'cells.get'
   | 'cells.put'
 > = {
-  'trials.freeze': ({ workplace }, { name, seq, result }) => {
+  'trials.freeze': (session, { name, seq, result }) => {
+    const { workplace } = session;
     const trial = workplace.project.freezeTrial(name, seq, result);
-    workplace.touched();
+    session.touched();
     return trial;
   },
   'trials.list': ({ workplace }) => ({ trials: workplace.project.listTrials() }),
-  'trials.rename': ({ workplace }, { id, name }) => {
+  'trials.rename': (session, { id, name }) => {
+    const { workplace } = session;
     const trial = workplace.project.renameTrial(id, name);
-    workplace.touched();
+    session.touched();
     return trial;
   },
-  'trials.delete': ({ workplace }, { id }) => {
+  'trials.delete': (session, { id }) => {
+    const { workplace } = session;
     workplace.project.deleteTrial(id);
-    workplace.touched();
+    session.touched();
     return {};
   },
   'trials.get': ({ workplace }, { id }) => workplace.project.getTrial(id),
-  'results.keep': ({ workplace }, { seq, settings, result }) => {
+  'results.keep': (session, { seq, settings, result }) => {
+    const { workplace } = session;
     const kept = workplace.project.keepResult(seq, settings, result);
-    if (kept) workplace.touched();
+    if (kept) session.touched();
     return { kept };
   },
   'results.get': ({ workplace }, { settings }) => ({
@@ -39,9 +43,10 @@ export const keptRequests: Handlers<
     result: workplace.project.findResult(settings),
   }),
   'cells.get': ({ workplace }, { keys }) => ({ found: workplace.project.getCells(keys) }),
-  'cells.put': ({ workplace }, { entries }) => {
+  'cells.put': (session, { entries }) => {
+    const { workplace } = session;
     workplace.project.putCells(entries);
-    workplace.touched();
+    session.touched();
     return {};
   },
 };

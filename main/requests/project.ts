@@ -49,24 +49,28 @@ export const projectRequests: Handlers<
     const to = path === undefined ? null : asProject(wholePath(path));
     return { path: await workplace.duplicate(to, replace === true) };
   },
-  'project.edit': ({ workplace }, { edit, seq }) => {
+  'project.edit': (session, { edit, seq }) => {
+    const { workplace } = session;
     const position = workplace.project.edit(edit, seq);
-    workplace.touched();
+    session.touched();
     return position;
   },
-  'project.undo': ({ workplace }) => {
+  'project.undo': (session) => {
+    const { workplace } = session;
     const moved = workplace.project.undo();
-    workplace.touched();
+    session.touched();
     return moved;
   },
-  'project.redo': ({ workplace }) => {
+  'project.redo': (session) => {
+    const { workplace } = session;
     const moved = workplace.project.redo();
-    workplace.touched();
+    session.touched();
     return moved;
   },
-  'project.revert': ({ workplace }) => {
+  'project.revert': (session) => {
+    const { workplace } = session;
     const moved = workplace.project.revert();
-    workplace.touched();
+    session.touched();
     return moved;
   },
   'project.backups': async (session, { path }) => {

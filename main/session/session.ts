@@ -14,6 +14,8 @@ export class Session {
   readonly settings: SessionSettings;
   readonly #send: (name: string, data: unknown) => void;
   #open: Workplace | null = null;
+  /** What the host and the page were last told of whether anything was done. */
+  #toldEdited = false;
 
   constructor(settings: SessionSettings, send: (name: string, data: unknown) => void) {
     this.settings = settings;
@@ -28,9 +30,7 @@ export class Session {
     return {
       userData: this.settings.userData,
       program: this.settings.version,
-      onChange: () => {
-        if (this.#open) this.emit('project', this.#open.standing);
-      },
+      onChange: () => this.#tell(),
       onTrouble: ({ kind, what, where, remedy }) => this.emit('problem', { kind, what, where, remedy }),
     };
   }
@@ -46,6 +46,20 @@ export class Session {
     if (!this.#open) return null;
     const { project, standing, notes } = this.#open;
     return { ...standing, ...project.position, chip: project.chip, notes: [...notes] };
+  }
+
+  /** Call after every step: the file is made whole when no further one follows, and the first one is told. */
+  touched(): void {
+    this.workplace.touched();
+    const { edited } = this.workplace.standing;
+    if (edited !== this.#toldEdited) this.#tell();
+  }
+
+  #tell(): void {
+    if (!this.#open) return;
+    const { standing } = this.#open;
+    this.#toldEdited = standing.edited;
+    this.emit('project', standing);
   }
 
   /** Opens a file in this window; what was open is closed once the new one is there. */
@@ -77,7 +91,7 @@ export class Session {
     this.#open = await before.saveAs(path, replace);
     if (before.standing.mode === 'draft') await forgetRecent(this.settings.userData, before.path);
     await this.#noteRecent();
-    this.emit('project', this.#open.standing);
+    this.#tell();
   }
 
   /** Closes what is open; everything acknowledged is kept. */
@@ -92,7 +106,7 @@ export class Session {
     this.#open = next;
     await before?.close();
     await this.#noteRecent();
-    this.emit('project', next.standing);
+    this.#tell();
     return this.state!;
   }
 
