@@ -1,5 +1,5 @@
 import type { SectionShape } from './section-shape.ts';
-import { solveSection } from './solve-section.ts';
+import { solveFlow } from './solve-section.ts';
 import { sharedSections } from './solved-unit.ts';
 
 /**
@@ -49,8 +49,11 @@ export class ResistanceTable {
     const values = new Float64Array(NODES);
     const middle = (piece.from + piece.to) / 2;
     const half = (piece.to - piece.from) / 2;
+    let size = 0;
     for (let k = 0; k < NODES; k += 1) {
-      values[k] = 1 / this.solve(middle + half * Math.cos((Math.PI * (k + 0.5)) / NODES));
+      const [conductance, served] = this.solve(middle + half * Math.cos((Math.PI * (k + 0.5)) / NODES), size);
+      values[k] = 1 / conductance;
+      size = served;
     }
     const coefficients = chebyshev(values);
     const tail = Math.max(Math.abs(coefficients[NODES - 1]), Math.abs(coefficients[NODES - 2]));
@@ -59,13 +62,14 @@ export class ResistanceTable {
     else piece.halves = [emptyPiece(piece.from, middle), emptyPiece(middle, piece.to)];
   }
 
-  private solve(parameter: number): number {
+  /** `start` is the mesh size that served a neighbour; returns the conductance and the size that served. */
+  private solve(parameter: number, start: number): readonly [number, number] {
     const shape = this.shapeAt(parameter);
-    const known = sharedSections.get(shape.key, VALUES);
-    if (known) return known.conductance;
-    const unit = solveSection(shape, VALUES, this.where, Number.POSITIVE_INFINITY);
-    sharedSections.set(shape.key, VALUES, unit);
-    return unit.conductance;
+    const known = sharedSections.flow(shape.key, VALUES);
+    if (known) return [known, start];
+    const { solved, size } = solveFlow(shape, VALUES, this.where, start);
+    sharedSections.setFlow(shape.key, VALUES, solved.conductance);
+    return [solved.conductance, (size * shape.perimeter) / (4 * shape.area)];
   }
 }
 

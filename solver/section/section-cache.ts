@@ -5,6 +5,19 @@ import type { UnitSection } from './unit-section.ts';
 /** Changes whenever the same shape may give other numbers, so that kept sections are not mixed up. */
 export const SECTION_VERSION = 1;
 
+/** A conductance alone, as tables of tapers need it. */
+export interface KeptFlow {
+  readonly key: string;
+  readonly accuracy: number;
+  readonly conductance: number;
+}
+
+export interface KeptSections {
+  readonly version: number;
+  readonly sections: readonly KeptSection[];
+  readonly flows: readonly KeptFlow[];
+}
+
 export interface KeptSection {
   readonly key: string;
   /** Accuracy that was asked for. */
@@ -19,6 +32,7 @@ export interface KeptSection {
 export class SectionCache {
   private readonly limit: number;
   private readonly kept = new Map<string, KeptSection>();
+  private readonly flows = new Map<string, KeptFlow>();
   private readonly recent = new WeakMap<
     Profile,
     Map<number, { readonly depth: number; readonly accuracy: number; readonly section: Section }[]>
@@ -39,13 +53,16 @@ export class SectionCache {
   }
 
   set(key: string, accuracy: number, unit: UnitSection): void {
-    const name = nameOf(key, accuracy);
-    this.kept.delete(name);
-    this.kept.set(name, { key, accuracy, unit });
-    if (this.kept.size > this.limit) {
-      const oldest = this.kept.keys().next();
-      if (!oldest.done) this.kept.delete(oldest.value);
-    }
+    renew(this.kept, nameOf(key, accuracy), { key, accuracy, unit }, this.limit);
+  }
+
+  /** Conductance of that shape in its own unit, solved to just this accuracy. */
+  flow(key: string, accuracy: number): number | undefined {
+    return this.flows.get(nameOf(key, accuracy))?.conductance;
+  }
+
+  setFlow(key: string, accuracy: number, conductance: number): void {
+    renew(this.flows, nameOf(key, accuracy), { key, accuracy, conductance }, this.limit);
   }
 
   /** The section of that very profile (by identity: a chip's profiles are immutable) and size. */
@@ -72,25 +89,37 @@ export class SectionCache {
   }
 
   /** Least recently used first. */
-  entries(): { readonly version: number; readonly sections: readonly KeptSection[] } {
-    return { version: SECTION_VERSION, sections: [...this.kept.values()] };
+  entries(): KeptSections {
+    return {
+      version: SECTION_VERSION,
+      sections: [...this.kept.values()],
+      flows: [...this.flows.values()],
+    };
   }
 
   /** Takes over what another cache held; of another version, or not of this form, nothing. Returns how many. */
   load(kept: unknown): number {
-    if (!isRecord(kept) || kept.version !== SECTION_VERSION || !Array.isArray(kept.sections)) return 0;
-    let count = 0;
-    for (const section of kept.sections as unknown[]) {
-      if (!isKept(section)) continue;
-      this.set(section.key, section.accuracy, section.unit);
-      count += 1;
-    }
-    return count;
+    if (!isRecord(kept) || kept.version !== SECTION_VERSION) return 0;
+    const list = (value: unknown): unknown[] => (Array.isArray(value) ? value : []);
+    const sections = list(kept.sections).filter(isKept);
+    const flows = list(kept.flows).filter(isFlow);
+    for (const { key, accuracy, unit } of sections) this.set(key, accuracy, unit);
+    for (const { key, accuracy, conductance } of flows) this.setFlow(key, accuracy, conductance);
+    return sections.length + flows.length;
   }
 }
 
 /** Depths and accuracies of one width that are remembered at a time. */
 const MOST_DEPTHS = 8;
+
+/** Sets an entry as the newest and drops the oldest beyond the limit. */
+function renew<T>(map: Map<string, T>, name: string, value: T, limit: number): void {
+  map.delete(name);
+  map.set(name, value);
+  if (map.size <= limit) return;
+  const oldest = map.keys().next();
+  if (!oldest.done) map.delete(oldest.value);
+}
 
 const nameOf = (key: string, accuracy: number): string => `${accuracy} ${key}`;
 
@@ -101,6 +130,15 @@ function isRecord(value: unknown): value is Record<string, unknown> {
 const isPositive = (value: unknown): boolean => Number.isFinite(value) && (value as number) > 0;
 const isPlace = (value: unknown): boolean =>
   Array.isArray(value) && value.length === 2 && value.every((part) => Number.isFinite(part));
+
+function isFlow(value: unknown): value is KeptFlow {
+  return (
+    isRecord(value) &&
+    typeof value.key === 'string' &&
+    isPositive(value.accuracy) &&
+    isPositive(value.conductance)
+  );
+}
 
 function isKept(value: unknown): value is KeptSection {
   if (!isRecord(value) || typeof value.key !== 'string' || !isPositive(value.accuracy)) return false;

@@ -1,13 +1,9 @@
 import type { Mesh } from '../mesh/mesh.ts';
-import { elementTable } from './element-table.ts';
-import { planeFlow } from './plane-flow.ts';
+import { boundedFlow } from './bounded-flow.ts';
 import type { Profile } from './profile.ts';
-import { DEGREE_4 } from './quadrature.ts';
 import { checkSize } from './section-of.ts';
-import { SYMMETRY } from './section-shape.ts';
 import { sectionMesh } from './solve-section.ts';
 import { shapeOf } from './solved-unit.ts';
-import { stiffness } from './stiffness.ts';
 
 /** Velocity over a section, to be drawn: quadratic on six-node triangles. */
 export interface SectionField {
@@ -30,14 +26,7 @@ export function sectionField(profile: Profile, width: number, depth: number, whe
   const shape = shapeOf(profile, width, depth, where);
   const size = (SIZE * 4 * shape.area) / shape.perimeter;
   const mesh = sectionMesh(shape, size, 8, where);
-  const wall = new Uint8Array(mesh.nodeCount);
-  const mirror = new Uint8Array(mesh.nodeCount);
-  for (let i = 0; i < mesh.boundaryTag.length; i += 1) {
-    const flags = mesh.boundaryTag[i] === SYMMETRY ? mirror : wall;
-    for (let k = 0; k < 3; k += 1) flags[mesh.boundary[3 * i + k]] = 1;
-  }
-  const table = elementTable(mesh, DEGREE_4);
-  const { u } = planeFlow(mesh, table, stiffness(mesh, table), wall, mirror);
+  const { u } = boundedFlow(shape, mesh).flow;
   const { unit, origin } = shape;
   for (let i = 0; i < mesh.nodeCount; i += 1) {
     mesh.x[i] = origin[0] + mesh.x[i] * unit;
