@@ -32,7 +32,17 @@ const { channelwright } = window as unknown as { readonly channelwright?: Bridge
 const client = createClient(
   channelwright ? desktopTransport(channelwright) : loopbackTransport({ origin: '', window: windowName() }),
 );
-const desk = createDesk(client, createSolver(workerThread()));
+const desk = createDesk(
+  client,
+  createSolver(workerThread(), {
+    get: (keys) =>
+      client.call('cells.get', { keys: [...keys] }).then(
+        ({ found }) => found,
+        () => [],
+      ),
+    put: (cell) => void client.call('cells.put', { entries: [cell] }).catch(() => undefined),
+  }),
+);
 const bench = createWorkbench(desk);
 const preferences = createPreferences(client);
 const commands = createCommands(desk, bench, () => preferences.store.get().keys);

@@ -15,7 +15,15 @@ export type Order =
   | { readonly kind: 'try'; readonly id: number; readonly edit: ChipEdit }
   /** Solves one variant after another and sends each result. */
   | { readonly kind: 'sweep'; readonly id: number; readonly edits: readonly ChipEdit[] }
-  | { readonly kind: 'cancel'; readonly id: number };
+  | { readonly kind: 'cancel'; readonly id: number }
+  /** Solved junctions that the project had kept, in answer to 'want'. */
+  | { readonly kind: 'kept'; readonly cells: readonly KeptCell[] };
+
+/** A solved junction as the project keeps it. */
+export interface KeptCell {
+  readonly key: string;
+  readonly bytes: Uint8Array;
+}
 
 /** A refusal as it crosses the thread. */
 export interface Refused {
@@ -51,5 +59,9 @@ export type News =
       /** Junctions still being solved, which count as ideal in this answer; another answer follows. */
       readonly waiting: number;
     }
+  /** Whether the project has kept these; 'kept' is to follow, with what was found. */
+  | { readonly kind: 'want'; readonly keys: readonly string[] }
+  /** A junction was solved, to be kept in the project. */
+  | { readonly kind: 'keep'; readonly cell: KeptCell }
   | { readonly kind: 'tried'; readonly id: number; readonly outcome: Outcome }
   | { readonly kind: 'swept'; readonly id: number; readonly index: number; readonly outcome: Outcome };

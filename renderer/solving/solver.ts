@@ -4,7 +4,7 @@ import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { SolveOptions } from '../../solver/solve.ts';
 import { createStore, type Store } from '../state/store.ts';
-import type { News, Order, Outcome, Refused } from './messages.ts';
+import type { KeptCell, News, Order, Outcome, Refused } from './messages.ts';
 
 /** The newest answer and what it is of. */
 export interface Solved {
@@ -50,7 +50,14 @@ export interface Solver {
   end(): void;
 }
 
-export function createSolver(thread: Thread): Solver {
+/** Where the project keeps solved junctions; what it cannot give only costs time. */
+export interface KeptCells {
+  get(keys: readonly string[]): Promise<readonly KeptCell[]>;
+  put(cell: KeptCell): void;
+}
+const NOWHERE: KeptCells = { get: () => Promise.resolve([]), put: () => undefined };
+
+export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver {
   const solved = createStore<Solved>(NOTHING);
   /** Chips asked about and not yet answered, by number. */
   const asked = new Map<number, Chip>();
@@ -67,6 +74,14 @@ export function createSolver(thread: Thread): Solver {
     if (news.kind === 'tried') {
       tries.get(news.id)?.(news.outcome);
       tries.delete(news.id);
+      return;
+    }
+    if (news.kind === 'want') {
+      void kept.get(news.keys).then((cells) => thread.post({ kind: 'kept', cells }));
+      return;
+    }
+    if (news.kind === 'keep') {
+      kept.put(news.cell);
       return;
     }
     if (news.kind === 'swept') {

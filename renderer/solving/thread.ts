@@ -1,5 +1,7 @@
 import type { Accuracy, ShapeSolution } from '../../solver/cell/cell.ts';
 import type { CellSpec } from '../../solver/cell/cut/spec.ts';
+import { decodeSolution, encodeSolution } from '../../solver/cell/encode.ts';
+import { cellKey } from '../../solver/cell/solve-cell.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { applyEdit } from '../../solver/chip/edit.ts';
 import type { Graph } from '../../solver/chip/graph.ts';
@@ -15,6 +17,9 @@ export interface CellHand {
   /** `put` the finding into memory, then say so by `listener`. */
   listen(listener: (cell: CellSpec, accuracy: Accuracy, found: Found) => void): void;
 }
+/** Keys asked for at once, within what a request may carry. */
+const MOST_WANTED = 256;
+
 export type Found = { readonly key: string; readonly solution: ShapeSolution } | Problem;
 
 /**
@@ -34,6 +39,9 @@ export function solvingThread(
   let newest = 0;
   let due = false;
   let sent: Graph | null = null;
+  /** Keys the project was asked for, and answers of it that are still to come. */
+  const wanted = new Set<string>();
+  let open = 0;
   const cancelled = new Set<number>();
 
   const outcomeOf = (which: Chip, haste = hand !== null): Outcome => {
@@ -42,6 +50,19 @@ export function solvingThread(
     } catch (error) {
       return { ok: false, problem: refused(error) };
     }
+  };
+
+  /** First the project is asked for what it kept, then what it has not is solved. */
+  const handOn = (waiting: readonly CellSpec[]): void => {
+    if (!hand) return;
+    const fresh = keysOf(waiting).filter((key) => !wanted.has(key));
+    if (fresh.length > 0) {
+      for (const key of fresh) wanted.add(key);
+      open += 1;
+      tell({ kind: 'want', keys: fresh });
+    }
+    // Anew each time: one that came may have been a copy of others.
+    if (open === 0) hand.solve(waiting, accuracyOf(options));
   };
 
   const answer = (): void => {
@@ -58,11 +79,13 @@ export function solvingThread(
     const news = graph && graph === sent ? 'same' : graph;
     tell({ kind: 'solved', id: newest, graph: news, outcome, waiting: outcome.ok ? waiting.length : 0 });
     sent = graph;
-    // Anew each time: one that came may have been a copy of others.
-    hand?.solve(waiting, accuracyOf(options));
+    handOn(waiting);
   };
   hand?.listen((cell, accuracy, found) => {
     settleWaiting(cell, accuracy, found, memory.cells);
+    if (!(found instanceof Problem)) {
+      tell({ kind: 'keep', cell: { key: found.key, bytes: encodeSolution(found.solution) } });
+    }
     soon();
   });
   const soon = (): void => {
@@ -79,8 +102,17 @@ export function solvingThread(
 
   return (order) => {
     switch (order.kind) {
+      case 'kept':
+        open -= 1;
+        for (const { key, bytes } of order.cells) {
+          const solution = decodeSolution(bytes);
+          if (solution) memory.cells.store.put(key, solution);
+        }
+        return soon();
       case 'load':
         memory = emptyMemory();
+        wanted.clear();
+        open = 0;
         chip = order.chip;
         options = order.options;
         newest = order.id;
@@ -116,6 +148,19 @@ export function solvingThread(
         cancelled.add(order.id);
     }
   };
+}
+
+/** Keys of the shapes, each once; a shape that cannot be solved has none. */
+function keysOf(cells: readonly CellSpec[]): string[] {
+  const keys = new Set<string>();
+  for (const { shape, name } of cells) {
+    try {
+      keys.add(cellKey(shape, name));
+    } catch {
+      // the solve itself says why
+    }
+  }
+  return [...keys].slice(0, MOST_WANTED);
 }
 
 function refused(error: unknown): Refused {
