@@ -2,7 +2,17 @@ import type { Chip } from '../../solver/chip/chip.ts';
 import type { Change, ChipEdit } from '../../solver/chip/edit.ts';
 
 const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports'] as const;
-const KEYS = ['name', 'note', 'lengthUnit', 'outline', 'fluid', 'targets', 'limits'] as const;
+const KEYS = [
+  'name',
+  'note',
+  'lengthUnit',
+  'outline',
+  'fluid',
+  'targets',
+  'limits',
+  'process',
+  'accepted',
+] as const;
 
 interface Part {
   readonly id: string;
@@ -12,7 +22,7 @@ interface Part {
 export function editBetween(from: Chip, to: Chip, label: string): ChipEdit {
   const changes: Change[] = [];
   for (const key of KEYS) {
-    if (from[key] !== to[key]) changes.push({ kind: 'set', key, value: to[key] } as Change);
+    if (from[key] !== to[key]) changes.push({ kind: 'set', key, value: to[key] ?? null } as Change);
   }
   for (const list of LISTS) changes.push(...betweenLists(list, from[list], to[list]));
   return { label, changes };

@@ -17,7 +17,7 @@ export type PartKind = 'head' | ListKind;
 export const LIST_KINDS = Object.keys(LISTS) as ListKind[];
 
 /** What is left of a chip without its lists. */
-export type Head = Pick<Chip, 'name' | 'note' | 'lengthUnit' | 'outline' | 'fluid'>;
+export type Head = Pick<Chip, 'name' | 'note' | 'lengthUnit' | 'outline' | 'fluid' | 'process' | 'accepted'>;
 
 export interface Part {
   readonly kind: PartKind;
@@ -27,8 +27,16 @@ export interface Part {
 }
 
 export function headOf(chip: Chip): Head {
-  const { name, note, lengthUnit, outline, fluid } = chip;
-  return { name, note, lengthUnit, outline, fluid };
+  const { name, note, lengthUnit, outline, fluid, process, accepted } = chip;
+  return {
+    name,
+    note,
+    lengthUnit,
+    outline,
+    fluid,
+    ...(process && { process }),
+    ...(accepted && { accepted }),
+  };
 }
 
 /** Things drawn are never changed, only replaced, so what was written of one stays true. */

@@ -48,7 +48,17 @@ export function toEdit(chip: Chip, alteration: Alteration): ChipEdit {
         : { kind: 'insert', list, index, part: value }) as Change,
     );
   }
-  for (const key of ['name', 'note', 'lengthUnit', 'outline', 'fluid', 'targets', 'limits'] as const)
+  for (const key of [
+    'name',
+    'note',
+    'lengthUnit',
+    'outline',
+    'fluid',
+    'targets',
+    'limits',
+    'process',
+    'accepted',
+  ] as const)
     if (set[key] !== undefined) changes.push({ kind: 'set', key, value: set[key] } as Change);
   for (const { ref, to } of alteration.rename ?? []) {
     const { kind, id } = readRef(ref);

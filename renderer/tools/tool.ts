@@ -1,4 +1,5 @@
 import type { Chamber, Channel, Chip, Port, Via } from '../../solver/chip/chip.ts';
+import type { TopOf } from '../../solver/chip/schema-chip.ts';
 import type { Xy } from '../geometry/vector.ts';
 import type { Spatial } from '../sheet/spatial.ts';
 import type { Ref } from '../state/ref.ts';
@@ -12,7 +13,8 @@ export type PartValue =
 
 /** What is of the chip as a whole. */
 export type Whole = Partial<
-  Pick<Chip, 'name' | 'note' | 'outline' | 'layers' | 'fluid' | 'targets' | 'limits' | 'lengthUnit'>
+  Pick<Chip, 'name' | 'note' | 'outline' | 'layers' | 'fluid' | 'targets' | 'limits' | 'lengthUnit'> &
+    Pick<TopOf, 'process' | 'accepted'>
 >;
 
 /** A wish to change the chip: parts to put (new, or in place of those that bear their ids), parts to drop. */

@@ -12,6 +12,7 @@ export const BOUNDS = {
   ports: 50_000,
   targets: 100_000,
   limits: 1_000,
+  accepted: 10_000,
   /** Points of all paths and chamber outlines together. */
   points: 1_000_000,
   /** Points of one measured cross-section. */

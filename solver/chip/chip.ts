@@ -1,5 +1,6 @@
 import type { FluidSpec } from '../fluid/spec.ts';
 import type { Profile } from '../section/profile.ts';
+import type { Acceptance, Process } from './making.ts';
 
 /**
  * The chip: the one thing that is edited. Plan lengths and depths are whole nanometres, so nothing
@@ -27,6 +28,10 @@ export interface Chip {
   readonly fluid: FluidSpec;
   readonly targets: readonly Target[];
   readonly limits: readonly Limit[];
+  /** How it is made; absent where that is not said. */
+  readonly process?: Process;
+  /** Findings taken as they are; absent rather than empty. */
+  readonly accepted?: readonly Acceptance[];
 }
 
 /** A tolerance: a share of the nominal value, or a length in nanometres. */

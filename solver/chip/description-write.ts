@@ -13,6 +13,8 @@ import type {
   Tolerance,
 } from './chip.ts';
 import { FORMAT, VERSION } from './description.ts';
+import type { Process } from './making.ts';
+import { LENGTHS, NUMBERS } from './schema-making.ts';
 import type { Kind } from './units.ts';
 import { NM_PER_UNIT, planText, writeQuantity } from './units-write.ts';
 
@@ -184,6 +186,14 @@ function limitOf(limit: Limit, spell: Spell): Json {
   };
 }
 
+function processOf(process: Process, scale: number, spell: Spell): Json {
+  const written: Record<string, Json> = { kind: process.kind };
+  for (const key of LENGTHS) if (process[key] !== undefined) written[key] = process[key] / scale;
+  for (const key of NUMBERS) if (process[key] !== undefined) written[key] = process[key];
+  if (process.modulus !== undefined) written.modulus = spell(process.modulus, 'modulus');
+  return written;
+}
+
 /** JSON on one line with room after commas and inside curly brackets. */
 function inline(value: Json): string {
   if (typeof value !== 'object') return JSON.stringify(value);
@@ -227,5 +237,7 @@ export function writeDescription(chip: Chip): string {
   one('fluid', fluidOf(chip.fluid, spell));
   list('targets', chip.targets, (target) => targetOf(target, spell));
   list('limits', chip.limits, (limit) => limitOf(limit, spell));
+  if (chip.process) one('process', processOf(chip.process, scale, spell));
+  list('accepted', chip.accepted ?? [], ({ kind, where, reason }) => ({ kind, where, reason }));
   return `{\n${lines.map((line) => `  ${line}`).join(',\n')}\n}\n`;
 }

@@ -296,6 +296,46 @@ describe('writing', () => {
   });
 });
 
+describe('process and accepted findings', () => {
+  const made = (more: string): string => EXAMPLE.replace(/\n\}$/, `,\n${more}\n}`);
+
+  test('are read in the length unit, written back, and absent where not given', () => {
+    expect(readDescription(EXAMPLE)).not.toHaveProperty('process');
+    expect(readDescription(EXAMPLE)).not.toHaveProperty('accepted');
+    const text = made(
+      `"process": { "kind": "milling", "toolRadius": 150, "wall": 3, "modulus": "2 MPa" },
+       "accepted": [{ "kind": "least-gap", "where": "feed", "reason": "made so before" }]`,
+    );
+    const chip = readDescription(text);
+    expect(chip.process).toEqual({ kind: 'milling', toolRadius: 150_000, wall: 3, modulus: 2e6 });
+    expect(chip.accepted).toEqual([{ kind: 'least-gap', where: 'feed', reason: 'made so before' }]);
+    expect(readDescription(writeDescription(chip))).toEqual(chip);
+  });
+
+  test.each([
+    ['"process": { "kind": "casting" }', /process.*kind/, 'takes one of "film-mask"'],
+    ['"process": { "kind": "milling", "wall": 0 }', /process.*wall/, 'must be above zero'],
+    ['"process": { "kind": "milling", "speed": 3 }', /process.*speed/, 'is no known key'],
+    ['"accepted": []', /accepted/, 'takes 1 to'],
+    ['"accepted": [{ "kind": "a", "where": "", "reason": " " }]', /accepted.*reason/, 'is empty'],
+    [
+      '"accepted": [{ "kind": "a", "where": "", "reason": "b" }, { "kind": "a", "where": "", "reason": "c" }]',
+      /accepted.*1/,
+      'twice',
+    ],
+  ])('%s is refused', (more, where, what) => {
+    try {
+      readDescription(made(more));
+    } catch (error) {
+      expect(error).toBeInstanceOf(Problem);
+      expect((error as Problem).where).toMatch(where);
+      expect((error as Problem).what).toContain(what);
+      return;
+    }
+    throw new Error('read');
+  });
+});
+
 test('the nearest known word forgives slips and capitals', () => {
   const known = ['width', 'path', 'bendRadius', 'layer', 'id'];
   expect(nearest('widht', known)).toBe('width');

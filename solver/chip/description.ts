@@ -8,6 +8,7 @@ import { limit, target } from './description-terms.ts';
 import { checkChip } from './schema-check.ts';
 import { Fault, faultToProblem, parseWith, valueInWords } from './schema-fault.ts';
 import { choice, keyed, list, plan, readKeys, text } from './schema-fields.ts';
+import { accepted, process } from './schema-making.ts';
 
 /** The chip description: JSON text, version 1, which converts to the chip and back without loss. */
 
@@ -31,6 +32,8 @@ const KEYS: ReadonlySet<string> = new Set([
   'fluid',
   'targets',
   'limits',
+  'process',
+  'accepted',
 ]);
 
 const NEEDS = {
@@ -56,6 +59,8 @@ function rest(unit: LengthUnit) {
     fluid,
     targets: list(target, BOUNDS.targets).optional(),
     limits: list(limit, BOUNDS.limits).optional(),
+    process: process(unit).optional(),
+    accepted: accepted.optional(),
   });
 }
 
@@ -111,6 +116,8 @@ function chipOf(value: unknown, fallbackName: string): Chip {
     fluid: parts.fluid,
     targets: parts.targets ?? [],
     limits: parts.limits ?? [],
+    ...(parts.process && { process: parts.process }),
+    ...(parts.accepted && { accepted: parts.accepted }),
   };
 }
 

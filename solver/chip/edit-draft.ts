@@ -75,9 +75,10 @@ export class EditDraft {
         return this.#rename(first, start);
       case 'set': {
         const { key } = first;
-        const back = { kind: 'set', key, value: this.#chip[key] } as Change;
-        this.#chip = { ...this.#chip, [key]: first.value };
-        if (typeof first.value === 'object') this.fresh.add(first.value);
+        const back = { kind: 'set', key, value: this.#chip[key] ?? null } as Change;
+        const { [key]: _old, ...others } = this.#chip;
+        this.#chip = (first.value === null ? others : { ...this.#chip, [key]: first.value }) as Chip;
+        if (typeof first.value === 'object' && first.value !== null) this.fresh.add(first.value);
         this.#replaced = null;
         return [back];
       }

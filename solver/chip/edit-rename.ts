@@ -1,4 +1,5 @@
 import type { Chip, Limit, Target } from './chip.ts';
+import type { Acceptance } from './making.ts';
 import type { ListName } from './schema-check.ts';
 
 /** `entries` with `change` made of each; the same list where it left all as they were. */
@@ -44,9 +45,19 @@ function renamedLimit(limit: Limit, list: ListName, from: string, to: string): L
   return { ...limit, where: [a === from ? to : a, b === from ? to : b] };
 }
 
+/** Findings name channels and their pieces plainly, all else with its kind before it. */
+function renamedAcceptance(entry: Acceptance, list: ListName, from: string, to: string): Acceptance {
+  const { where } = entry;
+  const kind = list.slice(0, -1);
+  if (where === `${kind}:${from}`) return { ...entry, where: `${kind}:${to}` };
+  if (list !== 'channels') return entry;
+  const piece = /#\d+$/.exec(where)?.[0] ?? '';
+  return where === from + piece ? { ...entry, where: to + piece } : entry;
+}
+
 /** The chip with every reference to `from` of `list` made one to `to`; the same chip where there is none. */
 export function renamed(chip: Chip, list: ListName, from: string, to: string): Chip {
-  const next =
+  const drawn =
     list === 'layers'
       ? renamedLayer(chip, from, to)
       : {
@@ -54,6 +65,9 @@ export function renamed(chip: Chip, list: ListName, from: string, to: string): C
           targets: mapped(chip.targets, (target) => renamedTarget(target, list, from, to)),
           limits: mapped(chip.limits, (limit) => renamedLimit(limit, list, from, to)),
         };
+  const next: Chip = chip.accepted
+    ? { ...drawn, accepted: mapped(chip.accepted, (entry) => renamedAcceptance(entry, list, from, to)) }
+    : drawn;
   const same = (Object.keys(next) as (keyof Chip)[]).every((key) => next[key] === chip[key]);
   return same ? chip : next;
 }

@@ -38,6 +38,25 @@ const edit = (...changes: ChipEdit['changes']): ChipEdit => ({ label: 'a test', 
 const ids = (entries: readonly { readonly id: string }[]): string => entries.map(({ id }) => id).join(' ');
 
 describe('one edit', () => {
+  test('a key that may be absent is given, taken away and given back', () => {
+    const first = makeEdit(CHIP, edit({ kind: 'set', key: 'process', value: { kind: 'milling' } }));
+    expect(first.chip.process).toEqual({ kind: 'milling' });
+    expect(applyEdit(first.chip, readEdit(JSON.parse(JSON.stringify(first.inverse))))).toEqual(CHIP);
+    const gone = makeEdit(first.chip, edit({ kind: 'set', key: 'process', value: null }));
+    expect(gone.chip).not.toHaveProperty('process');
+    expect(readChip(gone.chip)).toEqual(CHIP);
+    expect(applyEdit(gone.chip, gone.inverse)).toEqual(first.chip);
+  });
+  test('a new name is carried into what is accepted', () => {
+    const accepted = ['b', 'b#2', 'bb', 'channel:b', 'port:b'].map((where) => ({
+      kind: 'x',
+      where,
+      reason: 'y',
+    }));
+    const chip = applyEdit(CHIP, edit({ kind: 'set', key: 'accepted', value: accepted }));
+    const next = applyEdit(chip, edit({ kind: 'rename', list: 'channels', id: 'b', to: 'd' }));
+    expect(next.accepted!.map(({ where }) => where)).toEqual(['d', 'd#2', 'bb', 'channel:d', 'port:b']);
+  });
   test('puts, inserts, removes and sets, and the inverse leads back', () => {
     const wide = { ...CHIP.channels[1]!, width: [200_000, 200_000] as const };
     const more = { ...CHIP.channels[0]!, id: 'd' };

@@ -10,6 +10,7 @@ import {
 } from './schema-check-parts.ts';
 import { checkFluid, checkLimit, checkTarget } from './schema-check-terms.ts';
 import { at, Fault, type Path, quoted } from './schema-fault.ts';
+import { checkAccepted, checkProcess } from './schema-making.ts';
 import { nearest } from './schema-nearest.ts';
 
 /** The lists of a chip whose entries bear ids. */
@@ -191,6 +192,9 @@ export function checkChip(chip: Chip, fresh: (part: object) => boolean = () => t
     throw new Fault('range', 'must be above zero.', 'Give the size of the chip.', ['outline', key]);
   }
   if (fresh(chip.fluid)) at(['fluid'], () => checkFluid(chip.fluid));
+  const { process, accepted } = chip;
+  if (process && fresh(process)) at(['process'], () => checkProcess(process));
+  if (accepted && fresh(accepted)) at(['accepted'], () => checkAccepted(accepted));
   const { layers, others } = byId(chip);
   const layerAt = finder(layers);
   const all = <L extends ListName>(list: L): void => {

@@ -2,12 +2,14 @@ import type { z } from 'zod';
 import type { FluidSpec } from '../fluid/spec.ts';
 import { BOUNDS } from './bounds.ts';
 import type { Chip, Limit, Target } from './chip.ts';
+import type { Acceptance, Process } from './making.ts';
 import { checkChip } from './schema-check.ts';
 import { nm } from './schema-data.ts';
 import { PART } from './schema-data-parts.ts';
 import { fluid, limits, targets } from './schema-data-terms.ts';
 import { Fault, faultToProblem, parseWith } from './schema-fault.ts';
 import { choice, keyed, list, text } from './schema-fields.ts';
+import { accepted, orNone, processData } from './schema-making.ts';
 
 /** The keys of a chip that are set whole. */
 export interface TopOf {
@@ -18,6 +20,9 @@ export interface TopOf {
   readonly fluid: FluidSpec;
   readonly targets: readonly Target[];
   readonly limits: readonly Limit[];
+  /** Null takes the key away. */
+  readonly process: Process | null;
+  readonly accepted: readonly Acceptance[] | null;
 }
 export type TopKey = keyof TopOf;
 
@@ -29,11 +34,17 @@ export const TOP: { readonly [K in TopKey]: z.ZodType<TopOf[K]> } = {
   fluid,
   targets,
   limits,
+  process: orNone(processData),
+  accepted: orNone(accepted),
 };
+
+const { process: _process, accepted: _accepted, ...NEEDED } = TOP;
 
 const whole = keyed(
   {
-    ...TOP,
+    ...NEEDED,
+    process: processData.exactOptional(),
+    accepted: accepted.exactOptional(),
     layers: list(PART.layers, BOUNDS.layers),
     channels: list(PART.channels, BOUNDS.channels),
     chambers: list(PART.chambers, BOUNDS.chambers),
@@ -41,7 +52,10 @@ const whole = keyed(
     ports: list(PART.ports, BOUNDS.ports),
   },
   Object.fromEntries(
-    [...Object.keys(TOP), 'layers', 'channels', 'chambers', 'vias', 'ports'].map((key) => [key, 'its value']),
+    [...Object.keys(NEEDED), 'layers', 'channels', 'chambers', 'vias', 'ports'].map((key) => [
+      key,
+      'its value',
+    ]),
   ),
 );
 

@@ -12,6 +12,7 @@ import type {
   Tolerance,
   Via,
 } from '../../solver/chip/chip.ts';
+import { PROCESS_KINDS } from '../../solver/chip/making.ts';
 import type { FluidSpec } from '../../solver/fluid/spec.ts';
 import type { Profile } from '../../solver/section/profile.ts';
 
@@ -239,6 +240,27 @@ const limit = (ids: readonly string[], ports: readonly string[]): fc.Arbitrary<L
 const sequence = <T>(ids: readonly string[], make: (id: string) => fc.Arbitrary<T>): fc.Arbitrary<T[]> =>
   ids.length === 0 ? fc.constant([]) : (fc.tuple(...ids.map(make)) as unknown as fc.Arbitrary<T[]>);
 
+const making = fc.record(
+  {
+    process: fc.record(
+      {
+        kind: fc.constantFrom(...PROCESS_KINDS),
+        leastWidth: length,
+        toolRadius: length,
+        deepest: fc.double({ min: 0.1, max: 20, noNaN: true }),
+        undercut: fc.double({ min: 1e-3, max: 2, noNaN: true }),
+        modulus: fc.double({ min: 1e5, max: 1e7, noNaN: true }),
+      },
+      { requiredKeys: ['kind'] },
+    ),
+    accepted: fc.uniqueArray(
+      fc.record({ kind: fc.constantFrom('least-width', 'least-gap'), where: word, reason: word }),
+      { minLength: 1, maxLength: 3, selector: ({ kind, where }) => `${kind} ${where}` },
+    ),
+  },
+  { requiredKeys: [] },
+);
+
 /** Counts of layers, channels, chambers, vias and ports, and words to make ids of. */
 export const randomChip: fc.Arbitrary<Chip> = fc
   .tuple(
@@ -266,13 +288,15 @@ export const randomChip: fc.Arbitrary<Chip> = fc
         fluid,
         targets: fc.array(target(ports, channels), { maxLength: 3 }),
         limits: fc.array(limit(ids, ports), { maxLength: 3 }),
+        making,
       })
-      .map((chip): Chip => {
+      .map(({ making: made, ...chip }): Chip => {
         // A chamber needs a cross-section of its own: its layers are made plain.
         const held = new Set(chip.chambers.map((entry) => entry.layer));
         // Cloned, because the generator's records have no prototype.
         return structuredClone({
           ...chip,
+          ...made,
           layers: chip.layers.map((entry) =>
             held.has(entry.id) ? { ...entry, profile: { kind: 'rectangle' } } : entry,
           ),

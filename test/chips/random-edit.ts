@@ -68,6 +68,8 @@ export function randomEdit(chip: Chip, random: () => number, serial: number): Ch
         key: 'limits',
         value: [{ name: 'cells', shear: 1 + random(), where: channel.id }],
       });
+    } else if (sort < 0.987) {
+      changes.push({ kind: 'set', key: 'process', value: random() < 0.5 ? null : { kind: 'milling' } });
     } else
       changes.push({ kind: 'set', key: 'outline', value: { width: 1 + whole(1e9), height: 1 + whole(1e9) } });
   }
