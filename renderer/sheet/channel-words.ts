@@ -1,7 +1,7 @@
 import { FIGURE_FACE, type Palette, SIZES } from '../look/tokens.ts';
 import { figure } from '../words/figure.ts';
 import { type Camera, inView, type Size, toScreen } from './camera.ts';
-import type { Shown } from './overlay.ts';
+import { type Shown, valueOn } from './overlay.ts';
 import type { Room } from './room.ts';
 import type { Scene } from './scene.ts';
 import type { Spatial } from './spatial.ts';
@@ -31,9 +31,8 @@ export function drawChannelWords(
   for (const index of near) {
     for (let i = scene.first[index]!; i < scene.first[index + 1]! && written < MOST; i += 1) {
       const stretch = scene.stretches[i]!;
-      const values = shown.values.get(stretch.channel.id);
-      const value = values?.[values.length === 1 ? 0 : Math.max(0, stretch.piece)];
-      if (value === null || value === undefined) continue;
+      const value = valueOn(shown, stretch.channel.id, stretch.start, stretch.stop);
+      if (value === null) continue;
       let best = 0;
       let at = 0;
       for (let s = 0; s + 1 < stretch.path.length; s += 1) {

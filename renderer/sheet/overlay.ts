@@ -15,13 +15,22 @@ export const OVERLAYS = [
 ] as const;
 export type Overlay = (typeof OVERLAYS)[number];
 
+/** A value and where along its channel it holds, nm. */
+export interface Span {
+  readonly start: number;
+  readonly stop: number;
+  readonly value: number | null;
+}
+
 export interface Shown {
   readonly overlay: Overlay;
   readonly kind: Kind;
   /** "peak wall shear in each channel and junction" */
   readonly says: string;
-  /** Value of each piece by channel id, in the order of its pieces; null where it has none. */
-  readonly values: ReadonlyMap<string, readonly (number | null)[]>;
+  /** By channel id, in path order; null where there is no value. */
+  readonly values: ReadonlyMap<string, readonly Span[]>;
+  /** Solved junctions that have a value of their own: place (nm) and value. */
+  readonly places: readonly { readonly at: readonly [number, number]; readonly value: number }[];
   /** Ends of the ramp. */
   readonly from: number;
   readonly to: number;
@@ -34,7 +43,7 @@ const SAYS: Readonly<Record<Overlay, string>> = {
   share: 'share of the flow that enters the chip',
   speed: 'mean speed of the flow',
   pressure: 'pressure, over each channel',
-  'wall shear': 'peak wall shear in each channel',
+  'wall shear': 'peak wall shear in each channel and junction',
   time: 'time a liquid stays in each channel',
   'off target': 'how far each target is missed',
   depth: 'depth of the layer',
@@ -103,21 +112,21 @@ function pieceValue(
 
 /** What to colour, for a chip and its result (null while unsolved). */
 export function shown(overlay: Overlay, chip: Chip, result: Result | null): Shown {
-  const values = new Map<string, (number | null)[]>();
+  const values = new Map<string, Span[]>();
   if (overlay === 'depth') {
     const depths = new Map(chip.layers.map((layer) => [layer.id, layer.depth / 1e9]));
-    for (const channel of chip.channels) values.set(channel.id, [depths.get(channel.layer) ?? null]);
+    for (const channel of chip.channels) values.set(channel.id, whole(depths.get(channel.layer) ?? null));
   } else if (overlay === 'findings') {
     for (const finding of result?.findings ?? []) {
       const id = finding.where.replace(/#\d+$/, '');
       if (chip.channels.some((channel) => channel.id === id))
-        values.set(id, [finding.severity === 'note' ? 0.3 : 1]);
+        values.set(id, whole(finding.severity === 'note' ? 0.3 : 1));
     }
   } else if (result && overlay === 'off target') {
     for (const target of result.targets) {
       const off = target.got === null ? null : target.got / target.wanted - 1;
-      if (target.channel !== undefined) values.set(target.channel, [off]);
-      else for (const id of channelsAt(chip, target.port!)) values.set(id, [off]);
+      if (target.channel !== undefined) values.set(target.channel, whole(off));
+      else for (const id of channelsAt(chip, target.port!)) values.set(id, whole(off));
     }
   } else if (result) {
     const total = result.ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0);
@@ -125,19 +134,50 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
     for (const channel of result.channels)
       values.set(
         channel.id,
-        channel.pieces.map((piece) => pieceValue(overlay, piece, total, pressures)),
+        channel.pieces.map((piece) => ({
+          start: (piece.along?.[0] ?? 0) * 1e9,
+          stop: (piece.along?.[1] ?? piece.length) * 1e9,
+          value: pieceValue(overlay, piece, total, pressures),
+        })),
       );
   }
   const limit = overlay === 'wall shear' ? shearLimit(chip) : null;
+  const places = overlay === 'wall shear' ? junctionPeaks(result) : [];
   return {
     overlay,
     kind: KINDS[overlay],
     says: SAYS[overlay],
     values,
+    places,
     ramp: overlay === 'off target' ? 'deviation' : 'amount',
     limit,
-    ...range(overlay, values, limit, chip),
+    ...range(overlay, values, places, limit, chip),
   };
+}
+
+const whole = (value: number | null): Span[] => [{ start: 0, stop: Number.POSITIVE_INFINITY, value }];
+
+function junctionPeaks(result: Result | null): Shown['places'] {
+  return (result?.cells ?? []).flatMap(({ peakWallShear, peakAt }) =>
+    peakWallShear !== null && peakAt
+      ? [{ at: [peakAt[0] * 1e9, peakAt[1] * 1e9] as const, value: peakWallShear }]
+      : [],
+  );
+}
+
+/** The value that holds for most of a stretch of a channel; where it has none, that of the nearest piece. */
+export function valueOn(shown: Shown, id: string, start: number, stop: number): number | null {
+  let best: Span | null = null;
+  let most = Number.NEGATIVE_INFINITY;
+  for (const span of shown.values.get(id) ?? []) {
+    // below nothing it is how far apart they are
+    const overlap = Math.min(stop, span.stop) - Math.max(start, span.start);
+    if (overlap > most) {
+      most = overlap;
+      best = span;
+    }
+  }
+  return best?.value ?? null;
 }
 
 /** The lowest stress that holds for the whole chip. */
@@ -165,18 +205,20 @@ function channelsAt(chip: Chip, id: string): string[] {
 
 function range(
   overlay: Overlay,
-  values: ReadonlyMap<string, readonly (number | null)[]>,
+  values: Shown['values'],
+  places: Shown['places'],
   limit: number | null,
   chip: Chip,
 ): { readonly from: number; readonly to: number } {
   let low = Number.POSITIVE_INFINITY;
   let high = Number.NEGATIVE_INFINITY;
   for (const list of values.values())
-    for (const value of list)
+    for (const { value } of list)
       if (value !== null) {
         low = Math.min(low, value);
         high = Math.max(high, value);
       }
+  for (const { value } of places) high = Math.max(high, value);
   if (high < low) return { from: 0, to: 1 };
   if (overlay === 'off target') {
     const within = Math.max(0.01, ...chip.targets.map((target) => target.within));

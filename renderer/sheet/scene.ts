@@ -3,14 +3,12 @@ import type { Graph } from '../../solver/chip/graph.ts';
 import { placeAlong } from '../geometry/path.ts';
 import type { Xy } from '../geometry/vector.ts';
 import { SHADES } from '../look/ramp.ts';
-import { placeOn, type Shown } from './overlay.ts';
+import { placeOn, type Shown, valueOn } from './overlay.ts';
 
 /** A stretch of channel that is drawn in one colour. */
 export interface Stretch {
   readonly channel: Channel;
   readonly channelIndex: number;
-  /** Of the pieces of its channel; -1 where the whole channel is one stretch. */
-  readonly piece: number;
   readonly path: readonly Xy[];
   /** At both ends, nm. */
   readonly width: readonly [number, number];
@@ -52,7 +50,6 @@ export function makeScene(chip: Chip, graph: Graph | null, graphChip: Chip | nul
       stretches.push({
         channel,
         channelIndex,
-        piece: list ? 0 : -1,
         path: channel.path,
         width: channel.width,
         bendRadius: channel.bendRadius,
@@ -69,7 +66,6 @@ export function makeScene(chip: Chip, graph: Graph | null, graphChip: Chip | nul
       stretches.push({
         channel,
         channelIndex,
-        piece: i,
         path: part(channel.path, start, stop),
         width: [widthAt(channel, start / total), widthAt(channel, stop / total)],
         bendRadius: channel.bendRadius,
@@ -106,9 +102,8 @@ function part(path: readonly Xy[], start: number, stop: number): Xy[] {
 export function shadesOf(scene: Scene, overlay: Shown): Int16Array {
   const out = new Int16Array(scene.stretches.length).fill(-1);
   scene.stretches.forEach((stretch, i) => {
-    const values = overlay.values.get(stretch.channel.id);
-    const value = values?.[values.length === 1 ? 0 : Math.max(0, stretch.piece)];
-    if (value === null || value === undefined) return;
+    const value = valueOn(overlay, stretch.channel.id, stretch.start, stretch.stop);
+    if (value === null) return;
     out[i] = Math.round(placeOn(overlay, value) * (SHADES - 1));
   });
   return out;

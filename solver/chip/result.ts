@@ -52,6 +52,8 @@ export interface PieceResult {
   readonly peakWallShear: number | null;
   readonly meanWallShear: number | null;
   readonly residenceTime: number | null;
+  /** Distances along the channel at which the piece starts and stops, m. */
+  readonly along?: readonly [number, number];
   /** Relative error of the resistance as the section solve knows it. */
   readonly accuracy?: number;
 }
@@ -68,26 +70,58 @@ export interface CellResult {
   readonly peakAt: readonly [number, number] | null;
   /** Bound of the relative error of the port matrix; 1 where the cell is not solved and counts as ideal. */
   readonly accuracy: number;
+  /** Pressure at each face, Pa. */
+  readonly pressures?: readonly number[];
   /** Bound of the relative error of the peak, where there is one. */
   readonly peakError?: number;
+  /** Where limits are given: the fastest stretching inside, and viscous dissipation per volume, W/m^3. */
+  readonly stretch?: StretchResult;
+  readonly dissipation?: { readonly mean: number; readonly peak: number | null };
 }
 
+/** All that goes from one inlet to one outlet, whichever way; junctions divide what comes in by the flows out. */
 export interface RouteResult {
   readonly from: string;
   readonly to: string;
+  /** Of the total that enters the chip. */
   readonly share: number;
+  /** Mean over the flow. */
   readonly residenceTime: number | null;
+  /** What the fastest hundredth of the flow stays below, and the slowest above, s. */
+  readonly fastest?: number;
+  readonly slowest?: number;
   readonly peakWallShear: number | null;
-  readonly wallHugging?: {
-    readonly cellDiameter: number;
-    readonly residenceTime: number | null;
-    readonly peakShear: number | null;
-  };
+  /** Piece or cell of that peak; with no peak, where it is unbounded. */
+  readonly peakAt?: string;
+  /** Where fluid is pulled apart fastest: rate (1/s) and scalar stress of the full rate of strain (Pa) there. */
+  readonly stretch?: StretchResult & { readonly where: string };
+  /** Of the path that carries most: its share of the route's flow, and what it crosses, with time and pressure behind. */
+  readonly pathShare?: number;
+  readonly path?: readonly { readonly name: string; readonly time: number; readonly pressure: number }[];
+  /** A ball along the wall, one for each cell diameter that limits name; the first is also `wallHugging`. */
+  readonly wallHugging?: WallHuggingResult;
+  readonly wallHuggings?: readonly WallHuggingResult[];
+  /** Shares, by law limits that cover the route. */
   readonly damage: readonly {
     readonly limit: string;
     readonly mean: number | null;
     readonly wallHugging: number | null;
   }[];
+}
+
+/** null where the cell does not fit through. */
+export interface WallHuggingResult {
+  readonly cellDiameter: number;
+  readonly residenceTime: number | null;
+  readonly peakShear: number | null;
+}
+
+export interface StretchResult {
+  /** Rate at which a line along the flow grows, 1/s. */
+  readonly rate: number;
+  /** µ √(2 e:e), Pa */
+  readonly stress: number;
+  readonly at: readonly [number, number];
 }
 
 export interface TargetResult {
@@ -105,4 +139,8 @@ export interface LimitResult {
   readonly where: string;
   /** null where it could not be judged; a finding says why. */
   readonly met: boolean | null;
+  /** Route on which the worst was found, where the limit is one of routes. */
+  readonly route?: readonly [string, string];
+  /** Whether fluid on the mean or a cell along the wall met the worst. */
+  readonly path?: 'mean' | 'wall-hugging';
 }

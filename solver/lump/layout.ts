@@ -42,6 +42,7 @@ export function idealLayout(graph: Graph): Layout {
       toName: graph.sites[piece.to].name,
       length: Math.max(piece.length, 1) / NANOMETRES,
       width: [piece.width[0] / NANOMETRES, piece.width[1] / NANOMETRES],
+      along: [(piece.start + piece.trim[0]) / NANOMETRES, (piece.stop - piece.trim[1]) / NANOMETRES],
     }),
   );
   return {
@@ -71,6 +72,7 @@ export function cellLayout(
       toName: duct.toName,
       length: Math.max(duct.length, 1) / NANOMETRES,
       width: [duct.width[0] / NANOMETRES, duct.width[1] / NANOMETRES],
+      along: [duct.start / NANOMETRES, duct.stop / NANOMETRES],
     }),
   );
   const open = cells.filter(({ solution }) => solution === null).map(({ spec }) => spec);

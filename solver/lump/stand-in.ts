@@ -75,6 +75,7 @@ export function standIns(
         toName: '',
         length: Math.max(b.s - a.s, 1) / NANOMETRES,
         width: [widthAt(piece, a.s), widthAt(piece, b.s)],
+        along: [a.s / NANOMETRES, b.s / NANOMETRES],
       });
     }
   });

@@ -14,6 +14,8 @@ export interface Stretch {
   readonly length: number;
   /** Mask widths at its ends, m. */
   readonly width: readonly [number, number];
+  /** Distances along the channel at which it starts and stops, m. */
+  readonly along: readonly [number, number];
 }
 
 /** In a metre; dividing by it rounds once, which multiplying by 1e-9 does not. */

@@ -49,6 +49,7 @@ function cellResult(
     peakWallShear: peak ? peak.value : null,
     peakAt: peak ? [base.at[0] + peak.at[0], base.at[1] + peak.at[1]] : null,
     accuracy: solution.flowError,
+    pressures,
     ...(peak ? { peakError: peak.error } : {}),
   };
 }

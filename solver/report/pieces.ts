@@ -20,7 +20,13 @@ export function pieceResult(
 ): PieceResult {
   const { narrow } = duct;
   const resistance = viscosity * duct.resistance * stretch.length;
-  const base = { from: stretch.fromName, to: stretch.toName, length: stretch.length, resistance };
+  const base = {
+    from: stretch.fromName,
+    to: stretch.toName,
+    length: stretch.length,
+    along: stretch.along,
+    resistance,
+  };
   if (flow === null) {
     return {
       ...base,
