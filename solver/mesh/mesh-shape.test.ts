@@ -7,10 +7,18 @@ import { meshShape } from './mesh-shape.ts';
 import { leastJacobian } from './quality.ts';
 
 type Corner = readonly [x: number, y: number, bulge?: number];
-const loop = (corners: readonly Corner[]): Edge[] =>
-  corners.map(([x, y, bulge = 0], tag) => ({ x, y, bulge, tag }));
-
+/** Corners as pairs, or as text: x, y and bulge (q a quarter circle's) of each. */
+function loop(corners: readonly Corner[] | string): Edge[] {
+  const list = typeof corners === 'string' ? corners.split(', ').map(corner) : corners;
+  return list.map(([x, y, bulge = 0], tag) => ({ x, y, bulge, tag }));
+}
 const QUARTER = Math.tan(Math.PI / 8);
+function corner(text: string): Corner {
+  const [x, y, bulge = 0] = text
+    .split(' ')
+    .map((word) => (word.endsWith('q') ? Number(word.replace('q', '1')) * QUARTER : Number(word)));
+  return [x, y, bulge];
+}
 const hole = (x: number, y: number, r: number): Edge[] =>
   loop([
     [x - r, y, -1],
@@ -19,62 +27,12 @@ const hole = (x: number, y: number, r: number): Edge[] =>
 
 /** None is symmetric in itself. */
 const SHAPES: Record<string, Shape> = {
-  quadrilateral: [
-    loop([
-      [0, 0],
-      [1.3, 0.1],
-      [1, 1.1],
-      [0.1, 0.7],
-    ]),
-  ],
-  sharp: [
-    loop([
-      [0, 0],
-      [1, 0],
-      [0.2, 0.18],
-    ]),
-  ],
-  ell: [
-    loop([
-      [0, 0],
-      [2, 0],
-      [2, 1],
-      [1, 1],
-      [1, 3],
-      [0, 3],
-    ]),
-  ],
-  junction: [
-    loop([
-      [-2, 0],
-      [2.5, 0],
-      [2.5, 1],
-      [0.7, 1, -QUARTER],
-      [0.5, 1.2],
-      [0.5, 3],
-      [-0.5, 3],
-      [-0.5, 1.2, -QUARTER],
-      [-0.7, 1],
-      [-2, 1],
-    ]),
-  ],
-  rounded: [
-    loop([
-      [0, 0],
-      [0.5, 0, QUARTER],
-      [1.5, 1],
-      [0, 1],
-    ]),
-  ],
-  post: [
-    loop([
-      [0, 0],
-      [4, 0],
-      [4, 1],
-      [0, 1],
-    ]),
-    hole(1.7, 0.45, 0.15),
-  ],
+  quadrilateral: [loop('0 0, 1.3 0.1, 1 1.1, 0.1 0.7')],
+  sharp: [loop('0 0, 1 0, 0.2 0.18')],
+  ell: [loop('0 0, 2 0, 2 1, 1 1, 1 3, 0 3')],
+  junction: [loop('-2 0, 2.5 0, 2.5 1, 0.7 1 -q, 0.5 1.2, 0.5 3, -0.5 3, -0.5 1.2 -q, -0.7 1, -2 1')],
+  rounded: [loop('0 0, 0.5 0 q, 1.5 1, 0 1')],
+  post: [loop('0 0, 4 0, 4 1, 0 1'), hole(1.7, 0.45, 0.15)],
 };
 
 const area = (mesh: Mesh): number => {
@@ -270,14 +228,7 @@ test('size follows points, walls, arcs and gaps', () => {
   const arcs = edgesByTag(meshShape(SHAPES.rounded, { size: 5, perQuarter: 9 }));
   expect(arcs.get(1)).toHaveLength(9);
 
-  const gap: Shape = [
-    loop([
-      [0, 0],
-      [3, 0],
-      [3, 0.1],
-      [0, 0.1],
-    ]),
-  ];
+  const gap: Shape = [loop('0 0, 3 0, 3 0.1, 0 0.1')];
   const two = meshShape(gap, { size: 1, across: 2 });
   expect(edgesByTag(two).get(1)!.length).toBeGreaterThanOrEqual(2);
   expect(edgesByTag(two).get(0)!.length).toBeGreaterThanOrEqual(40);
@@ -332,12 +283,7 @@ test('random outlines, jagged ones, slivers, near-coincident corners and posts a
   }
   for (let i = 0; i < 10; i += 1) {
     shapes.push([
-      loop([
-        [0, 0],
-        [1, 0],
-        [1, 1],
-        [0, 1],
-      ]),
+      loop('0 0, 1 0, 1 1, 0 1'),
       hole(0.25, 0.3, 0.05 + 0.15 * next()),
       hole(0.75, 0.6, 0.05 + 0.18 * next()),
     ]);
@@ -425,12 +371,7 @@ test.each<[string, Corner[], RegExp]>([
 });
 
 test('holes outside, holes that cross, and meshes beyond all bounds are refused', () => {
-  const square = loop([
-    [0, 0],
-    [1, 0],
-    [1, 1],
-    [0, 1],
-  ]);
+  const square = loop('0 0, 1 0, 1 1, 0 1');
   expect(() => meshShape([square, hole(3, 0.5, 0.2)], { size: 0.2 })).toThrow(/holes lie outside/);
   expect(() => meshShape([square, hole(1, 0.5, 0.2)], { size: 0.2 })).toThrow(/crosses or touches itself/);
   expect(() => meshShape([square], { size: 1e-4 })).toThrow(/more than 200000 triangles/);

@@ -21,7 +21,7 @@ const CLEARANCE = 0.6;
 const LEAST_ANGLE = (26 * Math.PI) / 180;
 const BAD_SIN2 = Math.sin(LEAST_ANGLE) ** 2;
 
-const TODO = 0;
+const OPEN = 0;
 const DONE = 1;
 
 class Refiner {
@@ -59,13 +59,13 @@ class Refiner {
     const { mesh, inserter } = this;
     for (let t = 0; t < mesh.triangleCount; t += 1) this.judge(t);
     for (let t = 0; t < mesh.triangleCount; t += 1) {
-      if (this.state[t] === TODO && this.front(t) >= 0) this.push(t);
+      if (this.state[t] === OPEN && this.front(t) >= 0) this.push(t);
     }
     while (this.head < this.tail) {
       const t = this.queue[this.head];
       const fresh = this.queueBorn[this.head] === this.born[t];
       this.head += 1;
-      if (!fresh || this.state[t] !== TODO) continue;
+      if (!fresh || this.state[t] !== OPEN) continue;
       const e = this.front(t);
       if (e < 0) continue;
       if (this.advance(t, e)) {
@@ -85,18 +85,18 @@ class Refiner {
     this.born[t] = this.births;
     this.circle(t);
     const s = this.sizeOf(t);
-    this.state[t] = this.r2 * 3 <= FULL_SIZE * FULL_SIZE * s * s ? DONE : TODO;
+    this.state[t] = this.r2 * 3 <= FULL_SIZE * FULL_SIZE * s * s ? DONE : OPEN;
   }
 
   /** Puts a triangle on the front, or what a done one leaves open beside it. */
   private enter(t: number): void {
-    if (this.state[t] === TODO) {
+    if (this.state[t] === OPEN) {
       if (this.front(t) >= 0) this.push(t);
       return;
     }
     for (let e = 3 * t; e < 3 * t + 3; e += 1) {
       const f = this.mesh.twin[e];
-      if (f >= 0 && this.state[Math.floor(f / 3)] === TODO) this.push(Math.floor(f / 3));
+      if (f >= 0 && this.state[Math.floor(f / 3)] === OPEN) this.push(Math.floor(f / 3));
     }
   }
 

@@ -80,6 +80,45 @@ for (const [width, depth, length, resistance, mean, peak] of [
 
 verify(
   {
+    quantity:
+      'rectangle so flat that it is a gap between plates: f·Re, peak velocity, peak shear, resistance',
+    check: 'exact',
+    at: 'h/W = 1e-7',
+    source: 'plane Poiseuille flow: White 2006 sec. 3-3',
+    tolerance: 4e-7,
+  },
+  () => {
+    const section = rectangleSection(1, 1e-7);
+    return Math.max(
+      relative(section.frictionReynolds, 24),
+      relative(section.peakVelocity, 1.5),
+      relative(section.peakShear! / section.meanShear, 1),
+      relative(section.conductance, 1e-21 / 12),
+    );
+  },
+);
+
+verify(
+  {
+    quantity: 'f·Re of a rectangle against the usual polynomial in h/W, worst of all aspect ratios',
+    check: 'published',
+    at: '0 < h/W ≤ 1',
+    source: 'Shah & London 1978 ch. VII, polynomial from memory; good to 0.07 %',
+    tolerance: 8e-4,
+  },
+  () => {
+    let worst = 0;
+    for (let a = 0.01; a <= 1; a += 0.01) {
+      const fit =
+        24 * (1 - 1.3553 * a + 1.9467 * a ** 2 - 1.7012 * a ** 3 + 0.9564 * a ** 4 - 0.2537 * a ** 5);
+      worst = Math.max(worst, relative(rectangleSection(1, a).frictionReynolds, fit));
+    }
+    return worst;
+  },
+);
+
+verify(
+  {
     quantity: 'resistance of a taper',
     check: 'published',
     at: '100 to 300 µm wide, 50 µm deep, 5 mm long',

@@ -54,6 +54,19 @@ const unit: UnitSection = {
   wall: [0, 0, 1],
 };
 
+test('flows alone are kept and come back as well', () => {
+  const cache = new SectionCache(2);
+  for (const key of ['a', 'b', 'c']) cache.setFlow(key, 1e-5, 0.5);
+  expect(cache.flow('a', 1e-5)).toBeUndefined();
+  expect(cache.flow('b', 1e-4)).toBeUndefined();
+  const other = new SectionCache();
+  expect(other.load(JSON.parse(JSON.stringify(cache.entries())))).toBe(2);
+  expect(other.flow('b', 1e-5)).toBe(0.5);
+  const flow = { key: 'a', accuracy: 1e-5, conductance: 1 };
+  const bad = [7, { ...flow, key: 1 }, { ...flow, accuracy: 0 }, { ...flow, conductance: 'x' }];
+  expect(other.load({ version: SECTION_VERSION, flows: bad })).toBe(0);
+});
+
 test('the least recently used goes first', () => {
   const cache = new SectionCache(3);
   for (const key of ['a', 'b', 'c']) cache.set(key, 1e-3, unit);

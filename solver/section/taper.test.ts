@@ -4,7 +4,7 @@ import { etchedShape } from './etched-shape.ts';
 import type { Profile } from './profile.ts';
 import { varyingResistance } from './resistance-at.ts';
 import { sectionOf } from './section-of.ts';
-import { solveSection } from './solve-section.ts';
+import { solveFlow } from './solve-section.ts';
 import { taperResistance } from './taper.ts';
 
 const relative = (got: number, wanted: number): number => Math.abs(got / wanted - 1);
@@ -13,7 +13,7 @@ const SILICON = (Math.atan(Math.SQRT2) * 180) / Math.PI;
 /** Solved directly to a bound of 2e-6, in a shape of depth 1. */
 function direct(profile: Exclude<Profile, { kind: 'polygon' }>, width: number): number {
   const shape = etchedShape(profile, width, 1, '');
-  const { conductance } = solveSection(shape, 2e-6, '', Number.POSITIVE_INFINITY);
+  const { conductance } = solveFlow(shape, 2e-6, '').solved;
   return (conductance + shape.extra / 12) * shape.unit ** 4;
 }
 
