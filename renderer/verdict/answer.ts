@@ -9,6 +9,8 @@ export interface Evidence {
   readonly result: Result | null;
   /** Why there is no result, one sentence that ends with a full stop; '' where there is one or none was tried. */
   readonly trouble: string;
+  /** Junctions still being solved; they count as ideal meanwhile. */
+  readonly waiting?: number;
 }
 
 /**

@@ -1,6 +1,6 @@
 import type { Result } from '../../solver/chip/result.ts';
-import { counted, figure, number } from '../words/figure.ts';
-import { type Answer, type Evidence, placeRef, type Run, strong, unsolved } from './answer.ts';
+import { capital, counted, figure, number } from '../words/figure.ts';
+import { type Answer, type Evidence, placeRef, strong, unsolved } from './answer.ts';
 import { BUILD_KINDS } from './finding-kinds.ts';
 
 const QUESTION = 'Can I trust it?';
@@ -8,7 +8,8 @@ const QUESTION = 'Can I trust it?';
 /** Relative error that the solver states for its worst part. */
 export function statedError(result: Result): number {
   let worst = 0;
-  for (const cell of result.cells) worst = Math.max(worst, cell.accuracy);
+  // a junction that counts as ideal has no error of its own: that it is ideal is said instead
+  for (const cell of result.cells) if (cell.accuracy < 1) worst = Math.max(worst, cell.accuracy);
   for (const channel of result.channels)
     for (const piece of channel.pieces) worst = Math.max(worst, piece.accuracy ?? 0);
   return worst;
@@ -32,11 +33,12 @@ export function trustAnswer(evidence: Evidence): Answer {
   const doubts = result.findings.filter(
     (finding) => finding.severity !== 'note' && !BUILD_KINDS.has(finding.kind),
   );
-  const flow: Run = reynolds
+  const flow: string = reynolds
     ? `Re at most ${number(reynolds.value, reynolds.value < 0.1 ? 1 : 2)}.`
     : 'nothing flows.';
   const culprit = doubts[0] ? placeRef(doubts[0].where, chip) : reynolds && placeRef(reynolds.where, chip);
-  const solved = result.cells.length;
+  const solved = result.cells.filter((cell) => cell.accuracy < 1).length;
+  const { waiting = 0 } = evidence;
   const [first] = doubts;
   if (first)
     return {
@@ -48,6 +50,17 @@ export function trustAnswer(evidence: Evidence): Answer {
         doubts.length > 1 ? `, and ${counted(doubts.length - 1, 'more doubt')}.` : '.',
       ],
       margin: error > 0 ? band(error) : null,
+      culprit,
+    };
+  if (waiting > 0)
+    return {
+      question: QUESTION,
+      standing: 'unknown',
+      says: [
+        `${capital(counted(waiting, 'junction is', 'junctions are'))} being solved; ideal until then. `,
+        capital(flow),
+      ],
+      margin: null,
       culprit,
     };
   if (result.junctions !== 'solved')

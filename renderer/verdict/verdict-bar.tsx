@@ -17,15 +17,16 @@ export function VerdictBar() {
         chip: solved.chip ?? chip,
         result: solved.result,
         trouble: solved.problem ? `${solved.problem.what} ${solved.problem.remedy}` : '',
+        waiting: solved.waiting,
       }),
-    [chip, solved.chip, solved.result, solved.problem],
+    [chip, solved.chip, solved.result, solved.problem, solved.waiting],
   );
   return (
-    <section className="verdicts" aria-label="The five answers" aria-busy={solved.busy}>
+    <section className="verdicts" aria-label="The five answers" aria-busy={solved.busy || solved.waiting > 0}>
       {answers.map((answer) => (
         <Verdict key={answer.question} answer={answer} onCulprit={(ref) => commands.show(ref)} />
       ))}
-      <Announcement answers={answers} busy={solved.busy} />
+      <Announcement answers={answers} busy={solved.busy || solved.waiting > 0} />
     </section>
   );
 }

@@ -198,6 +198,15 @@ describe('Can I trust it?', () => {
       'Nearly: some junctions are still ideal, one junction solved; Re at most 1.2.',
     );
   });
+  test('junctions on their way are counted', () => {
+    const say = (waiting: number) =>
+      plainText(
+        verdicts({ chip: teeChip(), result: resultOf({ junctions: 'mixed' }), trouble: '', waiting })[4]!
+          .says,
+      );
+    expect(say(1)).toBe('One junction is being solved; ideal until then. Re at most 1.2.');
+    expect(say(15)).toContain('15 junctions are being solved');
+  });
   test('nothing flows', () => {
     const still = resultOf({
       junctions: 'ideal',
