@@ -70,7 +70,7 @@ function inPlan(ctx: CanvasRenderingContext2D, camera: Camera, size: Size, draw:
 
 function stretchOf(part: Extract<PartValue, { kind: 'channel' }>): Stretch {
   const { path, width, bendRadius } = part.value;
-  return { channel: part.value, channelIndex: 0, piece: -1, path, width, bendRadius, start: 0, stop: 0 };
+  return { channel: part.value, channelIndex: 0, path, width, bendRadius, start: 0, stop: 0 };
 }
 
 /** The body as it would be: outlined, and filled with the colour of what can be changed. */
