@@ -1,13 +1,17 @@
 import { spawn } from 'node:child_process';
 import { readFile } from 'node:fs/promises';
+import { enableCompileCache } from 'node:module';
 import { join, resolve } from 'node:path';
 import { Problem } from '../solver/problem/problem.ts';
+import { built, DESKTOP, PAGE } from './launch/built.ts';
 import { startOptions, USAGE } from './launch/options.ts';
 import { fetchRuntime, runtimePath } from './launch/runtime.ts';
 import { serve } from './launch/serve.ts';
 
 /** `npm start`: the desktop program where its runtime is, else the same program in the browser. */
 const root = resolve(import.meta.dirname, '..');
+// The second start need not read the sources again.
+enableCompileCache();
 const says = (line: string): void => console.log(line);
 
 async function desktop(executable: string, files: readonly string[]): Promise<number> {
@@ -27,6 +31,8 @@ async function main(): Promise<void> {
     let executable = await runtimePath(root);
     if (!executable && (await fetchRuntime(root, says))) executable = await runtimePath(root);
     if (executable) {
+      await built(root, PAGE, says);
+      await built(root, DESKTOP, says);
       process.exitCode = await desktop(executable, options.files);
       return;
     }

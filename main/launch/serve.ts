@@ -3,8 +3,8 @@ import { startLoopbackHost } from '../loopback/host.ts';
 import { createSessions } from '../session/sessions.ts';
 import { userDataFolder } from '../user/folder.ts';
 import { openBrowser } from './browser.ts';
+import { built, PAGE } from './built.ts';
 import type { StartOptions } from './options.ts';
-import { builtPage } from './page.ts';
 
 /** Runs the browser host until it is idle or told to stop. */
 export async function serve(
@@ -13,7 +13,7 @@ export async function serve(
   options: StartOptions,
   says: (line: string) => void,
 ): Promise<void> {
-  const page = await builtPage(root, says);
+  const page = await built(root, PAGE, says);
   const sessions = createSessions({
     host: 'browser',
     dialogs: false,
