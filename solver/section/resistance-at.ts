@@ -10,8 +10,8 @@ import { ResistanceTable } from './resistance-table.ts';
  * scaling beyond it (a closed V grows with the fourth power of its width, a flat middle like plates).
  */
 export interface VaryingResistance {
-  /** Per length and µ, m⁻⁴: 1/conductance; metres. */
-  at(width: number, depth: number): number;
+  /** Per length and µ, m⁻⁴: 1/conductance; metres. A `Problem` names `where`. */
+  at(width: number, depth: number, where: string): number;
   /** Widths between which it is smooth. */
   kinks(depth: number): readonly number[];
 }
@@ -40,21 +40,20 @@ function makeVarying(
     case 'ellipse':
       return { at: (width, depth) => 1 / ellipseConductance(width, depth), kinks: none };
     case 'rounded': {
-      const table = tableOf('rounded', FLATS, (flat) => etchedShape(profile, flat, 1, where), where);
-      return { at: (width, depth) => flatResistance(table, width / depth) / fourth(depth), kinks: none };
+      const table = tableOf('rounded', FLATS, (flat) => etchedShape(profile, flat, 1, ''));
+      return {
+        at: (width, depth, where) => flatResistance(table, width / depth, where) / fourth(depth),
+        kinks: none,
+      };
     }
     case 'triangle': {
-      const table = tableOf(
-        'triangle',
-        LID_LOGS,
-        (lid) => etchedShape(profile, Math.exp(lid), 1, where),
-        where,
-      );
+      const table = tableOf('triangle', LID_LOGS, (lid) => etchedShape(profile, Math.exp(lid), 1, ''));
       return {
-        at(width, depth) {
-          // Throws where the triangle is too thin to be solved.
-          if (Math.abs(Math.log(width / depth)) > LID_LOG) etchedShape(profile, width, depth, where);
-          return table.at(Math.log(width / depth)) / fourth(depth);
+        at(width, depth, where) {
+          const lid = Math.log(width / depth);
+          // Throws: the triangle is too thin to be solved.
+          if (lid < LID_LOGS[0] || lid > LID_LOG) etchedShape(profile, width, depth, where);
+          return table.at(lid, where) / fourth(depth);
         },
         kinks: none,
       };
@@ -62,15 +61,15 @@ function makeVarying(
     case 'trapezoid': {
       checkWallAngle(profile.wallAngle, where);
       const lean = 1 / Math.tan((profile.wallAngle * Math.PI) / 180);
-      const shapeAt = (flat: number) => etchedShape(profile, flat + 2 * lean, 1, where);
-      const table = tableOf(`trapezoid ${profile.wallAngle}`, FLATS, shapeAt, where);
+      const shapeAt = (flat: number) => etchedShape(profile, flat + 2 * lean, 1, '');
+      const table = tableOf(`trapezoid ${profile.wallAngle}`, FLATS, shapeAt);
       // The closed V: its resistance times the fourth power of its width.
       let closed = 0;
       return {
-        at(width, depth) {
+        at(width, depth, where) {
           const flat = width / depth - 2 * lean;
-          if (flat > 0) return flatResistance(table, flat) / fourth(depth);
-          if (closed === 0) closed = table.at(0) * fourth(2 * lean);
+          if (flat > 0) return flatResistance(table, flat, where) / fourth(depth);
+          if (closed === 0) closed = table.at(0, where) * fourth(2 * lean);
           return closed / fourth(width);
         },
         kinks: (depth) => [2 * lean * depth],
@@ -89,9 +88,9 @@ const none = (): readonly number[] => [];
 
 const fourth = (x: number): number => x * x * (x * x);
 
-function flatResistance(table: ResistanceTable, flat: number): number {
-  if (flat <= LONGEST_FLAT) return table.at(flat);
-  return 1 / (1 / table.at(LONGEST_FLAT) + (flat - LONGEST_FLAT) / 12);
+function flatResistance(table: ResistanceTable, flat: number, where: string): number {
+  if (flat <= LONGEST_FLAT) return table.at(flat, where);
+  return 1 / (1 / table.at(LONGEST_FLAT, where) + (flat - LONGEST_FLAT) / 12);
 }
 
 const tables = new Map<string, ResistanceTable>();
@@ -101,12 +100,11 @@ function tableOf(
   name: string,
   breaks: readonly number[],
   shapeAt: ConstructorParameters<typeof ResistanceTable>[1],
-  where: string,
 ): ResistanceTable {
   const known = tables.get(name);
   if (known) return known;
   if (tables.size >= MOST_TABLES) tables.clear();
-  const table = new ResistanceTable(breaks, shapeAt, where);
+  const table = new ResistanceTable(breaks, shapeAt);
   tables.set(name, table);
   return table;
 }

@@ -23,35 +23,37 @@ interface Piece {
 export class ResistanceTable {
   private readonly pieces: Piece[];
   private readonly shapeAt: (parameter: number) => SectionShape;
-  private readonly where: string;
 
   /** @param breaks ascending: the range of the parameter and where pieces end. */
-  constructor(breaks: readonly number[], shapeAt: (parameter: number) => SectionShape, where: string) {
+  constructor(breaks: readonly number[], shapeAt: (parameter: number) => SectionShape) {
     this.shapeAt = shapeAt;
-    this.where = where;
     this.pieces = breaks.slice(1).map((to, i) => emptyPiece(breaks[i], to));
   }
 
   /** m⁻⁴ for a shape of depth 1 m; the parameter must lie within the table's range. */
-  at(parameter: number): number {
+  at(parameter: number, where: string): number {
     let i = 0;
     while (i < this.pieces.length - 1 && parameter > this.pieces[i].to) i += 1;
     let piece = this.pieces[i];
     for (;;) {
-      if (!piece.coefficients && !piece.halves) this.make(piece);
+      if (!piece.coefficients && !piece.halves) this.make(piece, where);
       if (piece.coefficients) return clenshaw(piece, piece.coefficients, parameter);
       const [low, high]: readonly [Piece, Piece] = piece.halves!;
       piece = parameter <= low.to ? low : high;
     }
   }
 
-  private make(piece: Piece): void {
+  private make(piece: Piece, where: string): void {
     const values = new Float64Array(NODES);
     const middle = (piece.from + piece.to) / 2;
     const half = (piece.to - piece.from) / 2;
     let size = 0;
     for (let k = 0; k < NODES; k += 1) {
-      const [conductance, served] = this.solve(middle + half * Math.cos((Math.PI * (k + 0.5)) / NODES), size);
+      const [conductance, served] = this.solve(
+        middle + half * Math.cos((Math.PI * (k + 0.5)) / NODES),
+        size,
+        where,
+      );
       values[k] = 1 / conductance;
       size = served;
     }
@@ -63,11 +65,11 @@ export class ResistanceTable {
   }
 
   /** `start` is the mesh size that served a neighbour; returns the conductance and the size that served. */
-  private solve(parameter: number, start: number): readonly [number, number] {
+  private solve(parameter: number, start: number, where: string): readonly [number, number] {
     const shape = this.shapeAt(parameter);
     const known = sharedSections.flow(shape.key, VALUES);
     if (known) return [known, start];
-    const { solved, size } = solveFlow(shape, VALUES, this.where, start);
+    const { solved, size } = solveFlow(shape, VALUES, where, start);
     sharedSections.setFlow(shape.key, VALUES, solved.conductance);
     return [solved.conductance, (size * shape.perimeter) / (4 * shape.area)];
   }

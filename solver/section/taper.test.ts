@@ -1,11 +1,12 @@
 import { expect, test } from 'vitest';
 import { verify } from '../../test/verify/row.ts';
 import { etchedShape } from './etched-shape.ts';
+import { outlineOf } from './outline-of.ts';
 import type { Profile } from './profile.ts';
 import { varyingResistance } from './resistance-at.ts';
 import { sectionOf } from './section-of.ts';
 import { solveFlow } from './solve-section.ts';
-import { taperResistance } from './taper.ts';
+import { taperMeans, taperResistance } from './taper.ts';
 
 const relative = (got: number, wanted: number): number => Math.abs(got / wanted - 1);
 const SILICON = (Math.atan(Math.SQRT2) * 180) / Math.PI;
@@ -32,7 +33,7 @@ for (const [profile, widths] of [
     },
     () => {
       const table = varyingResistance(profile, '');
-      return Math.max(...widths.map((width) => relative(1 / table.at(width, 1), direct(profile, width))));
+      return Math.max(...widths.map((width) => relative(1 / table.at(width, 1, ''), direct(profile, width))));
     },
   );
 }
@@ -87,7 +88,8 @@ test('without a change of width a taper is a straight channel; a slight one lies
     { kind: 'triangle' },
   ] as const) {
     const section = sectionOf(profile, 2e-4, 1e-4);
-    expect(taperResistance(profile, 2e-4, 2e-4, 1e-4, 0.01)).toBe(0.01 / section.conductance);
+    const straight = taperResistance(profile, 2e-4, 2e-4, 1e-4, 0.01);
+    expect(relative(straight, 0.01 / section.conductance)).toBeLessThan(1e-15);
     const slight = taperResistance(profile, 2e-4, 2e-4 * (1 + 1e-9), 1e-4, 0.01);
     expect(relative(slight, 0.01 / section.conductance)).toBeLessThan(section.error + 1e-5);
   }
@@ -98,7 +100,8 @@ test('without a change of width a taper is a straight channel; a slight one lies
     [0, 5e-5],
   ] as const;
   const polygon = { kind: 'polygon', points } as const;
-  expect(taperResistance(polygon, 1, 2, 3, 0.01)).toBe(0.01 / sectionOf(polygon, 1, 3).conductance);
+  const constant = taperResistance(polygon, 1, 2, 3, 0.01);
+  expect(relative(constant, 0.01 / sectionOf(polygon, 1, 3).conductance)).toBeLessThan(1e-15);
 });
 
 test('an ellipse tapers as its closed form says', () => {
@@ -118,4 +121,53 @@ test('what no section can be, no taper can be', () => {
   expect(taper({ kind: 'rounded' }, 1, 0)).toThrow(/^feed: The width/);
   expect(taper({ kind: 'circle' }, 1, 2)).toThrow(/^feed: A round bore/);
   expect(taper({ kind: 'triangle' }, 1e-4, 2)).toThrow(/^feed: A triangle/);
+  // Between the thinnest triangle that is solved and its counterpart that is widest.
+  expect(taper({ kind: 'triangle' }, 0.02, 2)).toThrow(/^feed: A triangle/);
+  expect(() => taperMeans({ kind: 'triangle' }, 2, 200, 1, 'other')).toThrow(/^other: A triangle/);
+});
+
+test('means of area, perimeter and driving force along a taper', () => {
+  const profiles: Profile[] = [
+    { kind: 'rectangle' },
+    { kind: 'ellipse' },
+    { kind: 'rounded' },
+    { kind: 'triangle' },
+    { kind: 'trapezoid', wallAngle: SILICON },
+  ];
+  for (const profile of profiles) {
+    const means = taperMeans(profile, 1, 2.4, 1);
+    // Composite midpoint rule over solved sections.
+    let [area, perimeter, force] = [0, 0, 0];
+    const n = 24;
+    for (let i = 0; i < n; i += 1) {
+      const section = sectionOf(profile, 1 + (1.4 * (i + 0.5)) / n, 1);
+      area += section.area / n;
+      perimeter += section.perimeter / n;
+      force += section.area / section.conductance / n;
+    }
+    expect(relative(means.area, area)).toBeLessThan(3e-4);
+    expect(relative(means.perimeter, perimeter)).toBeLessThan(3e-4);
+    expect(relative(means.force, force)).toBeLessThan(3e-3);
+    expect(relative(taperMeans(profile, 2.4, 1, 1).force, means.force)).toBeLessThan(1e-12);
+  }
+});
+
+test('closed forms of area and perimeter are those of the shapes that are solved', () => {
+  const out = new Float64Array(2);
+  const profiles = [
+    { kind: 'rectangle' },
+    { kind: 'circle' },
+    { kind: 'ellipse' },
+    { kind: 'rounded' },
+    { kind: 'triangle' },
+    { kind: 'trapezoid', wallAngle: 50 },
+  ] as const;
+  for (const profile of profiles) {
+    for (const width of profile.kind === 'circle' ? [2] : [0.5, 2, 4, 40]) {
+      outlineOf(profile, width, 2, out);
+      const section = sectionOf(profile, width, 2);
+      expect(relative(out[0], section.area)).toBeLessThan(1e-12);
+      expect(relative(out[1], section.perimeter)).toBeLessThan(1e-12);
+    }
+  }
 });

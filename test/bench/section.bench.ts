@@ -8,7 +8,7 @@ import { SectionCache } from '../../solver/section/section-cache.ts';
 import { sectionOf } from '../../solver/section/section-of.ts';
 import { SYMMETRY } from '../../solver/section/section-shape.ts';
 import { sectionMesh, solveSection } from '../../solver/section/solve-section.ts';
-import { taperResistance } from '../../solver/section/taper.ts';
+import { taperMeans } from '../../solver/section/taper.ts';
 import { Python } from './native/scipy.ts';
 import { type BenchRow, timed } from './row.ts';
 
@@ -165,7 +165,7 @@ function tapers(): BenchRow[] {
     for (let i = 0; i < 10_000; i += 1) {
       const profile = of(i);
       const [w1, w2] = [width(i), width(i % 2 === 0 ? i : i + 1)];
-      sum += taperResistance(profile, w1, w2, 4e-5, 1e-3);
+      sum += taperMeans(profile, w1, w2, 4e-5).force;
       sum += sectionOf(profile, w1, 4e-5).meanShear + sectionOf(profile, w2, 4e-5).meanShear;
     }
     return sum;
