@@ -22,7 +22,8 @@ export async function startHost(files: readonly string[] = []): Promise<Host> {
     [join(ROOT, 'main/start.ts'), '--no-open', '--idle', '10', ...files],
     {
       cwd: ROOT,
-      env: { ...process.env, CHANNELWRIGHT_DATA: data, CHANNELWRIGHT_NO_OPEN: '1' },
+      // files are written into the same folder, so that nothing of the person's is touched
+      env: { ...process.env, CHANNELWRIGHT_DATA: data, CHANNELWRIGHT_NO_OPEN: '1', HOME: data },
       stdio: ['ignore', 'pipe', 'pipe'],
     },
   );

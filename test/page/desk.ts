@@ -1,0 +1,66 @@
+import type { BrowserContext, Page } from 'playwright-core';
+import { launch } from './browser.ts';
+import { type Host, startHost } from './host.ts';
+
+export interface Sitting {
+  readonly page: Page;
+  readonly context: BrowserContext;
+  readonly host: Host;
+  /** What the page said to the console as errors, and what it asked of anyone but its own host. */
+  readonly errors: string[];
+  readonly strangers: string[];
+  end(): Promise<void>;
+}
+
+/** A browser at the page of a fresh host. */
+export async function sit(
+  options: {
+    readonly width?: number;
+    readonly height?: number;
+    readonly scheme?: 'light' | 'dark';
+    readonly scale?: number;
+  } = {},
+): Promise<Sitting> {
+  const host = await startHost();
+  const browser = await launch();
+  const context = await browser.newContext({
+    viewport: { width: options.width ?? 1440, height: options.height ?? 900 },
+    colorScheme: options.scheme ?? 'light',
+    deviceScaleFactor: options.scale ?? 1,
+  });
+  await context.grantPermissions(['clipboard-read', 'clipboard-write'], { origin: host.origin });
+  const page = await context.newPage();
+  page.setDefaultTimeout(60_000);
+  const errors: string[] = [];
+  const strangers: string[] = [];
+  page.on('console', (message) => {
+    // a header the host sends names a feature this browser does not know
+    if (message.type() === 'error' && !/Permissions-Policy/.test(message.text())) errors.push(message.text());
+  });
+  page.on('pageerror', (error) => errors.push(error.message));
+  page.on('request', (request) => {
+    const url = request.url();
+    if (!url.startsWith(host.origin) && !url.startsWith('data:') && !url.startsWith('blob:'))
+      strangers.push(url);
+  });
+  await page.goto(host.address);
+  await page.getByRole('heading', { name: 'Begin a chip' }).waitFor();
+  return {
+    page,
+    context,
+    host,
+    errors,
+    strangers,
+    end: async () => {
+      await browser.close();
+      await host.stop();
+    },
+  };
+}
+
+/** Waits until the newest chip is answered and all its junctions are solved. */
+export async function answered(page: Page): Promise<void> {
+  await page.locator('.verdicts[aria-busy="false"]').waitFor({ timeout: 120_000 });
+  await page.waitForTimeout(150);
+  await page.locator('.verdicts[aria-busy="false"]').waitFor({ timeout: 120_000 });
+}
