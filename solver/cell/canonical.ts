@@ -124,13 +124,12 @@ function leastStarts(words: readonly [number[][], number[][]]): Candidate[] {
 }
 
 export function canonical(given: CellShape): Canonical {
-  let low = [Number.POSITIVE_INFINITY, Number.POSITIVE_INFINITY];
-  let high = [Number.NEGATIVE_INFINITY, Number.NEGATIVE_INFINITY];
-  for (const edge of given.loops[0]) {
-    low = [Math.min(low[0], edge.x), Math.min(low[1], edge.y)];
-    high = [Math.max(high[0], edge.x), Math.max(high[1], edge.y)];
-  }
-  const extent = Math.hypot(high[0] - low[0], high[1] - low[1]);
+  // A measure that no turn changes: half the way round, chord by chord.
+  let extent = 0;
+  given.loops[0].forEach((edge, i) => {
+    const next = given.loops[0][(i + 1) % given.loops[0].length];
+    extent += Math.hypot(next.x - edge.x, next.y - edge.y) / 2;
+  });
   const loops = given.loops.map((loop) => tidy(loop, 1e-10 * extent));
   const both = [loops, loops.map(reflected)] as const;
   const starts = leastStarts([word(both[0][0], 1 / extent), word(both[1][0], 1 / extent)]);
@@ -169,7 +168,8 @@ function build(given: CellShape, loops: readonly Edge[][], from: Candidate, exte
   const length = Math.hypot(next.x - origin.x, next.y - origin.y);
   const cos = (next.x - origin.x) / length;
   const sin = (next.y - origin.y) / length;
-  const quantum = (QUANTUM * 2 ** Math.ceil(Math.log2(extent / depth))) as number;
+  // The odd factor keeps round extents away from where the step changes.
+  const quantum = QUANTUM * 2 ** Math.ceil(Math.log2((0.8123 * extent) / depth));
   const snap = (value: number): number => Math.round(value / quantum) * quantum + 0;
 
   const face = new Map<number, number>();

@@ -1,7 +1,7 @@
 import type { Mesh } from '../mesh/mesh.ts';
 import type { CellChecks, CellFields } from './cell.ts';
 import { type DepthModes, standardModes } from './depth.ts';
-import { analysePlane, factorPlane, type PlaneSymbolic } from './factors.ts';
+import { analysePlane, factorPlane, type PlaneSymbolic, type StokesFactors } from './factors.ts';
 import { HALF } from './flow-field.ts';
 import { assemblePlane, faceLoads, type Plane } from './plane.ts';
 import { portMatrix } from './port-matrix.ts';
@@ -23,6 +23,7 @@ export function levelOf(mesh: Mesh, faces: number): Level {
 export interface LevelSolution {
   readonly level: Level;
   readonly modes: number;
+  readonly factors: StokesFactors;
   readonly flow: StokesFields;
   readonly matrix: Float64Array;
   readonly checks: CellChecks;
@@ -30,12 +31,28 @@ export interface LevelSolution {
 
 /** Solves all face patterns on one mesh (depth 1, viscosity 1). */
 export function solveLevel(level: Level, modes: number, tolerance: number): LevelSolution {
-  const { plane, symbolic, loads } = level;
+  const factors = factorPlane(level.plane, level.symbolic, standardModes(modes), HALF);
+  return iterate(level, modes, factors, tolerance);
+}
+
+/** Goes on with a solution to a tighter tolerance. */
+export function tighten(loose: LevelSolution, tolerance: number): LevelSolution {
+  return iterate(loose.level, loose.modes, loose.factors, tolerance, loose.flow);
+}
+
+function iterate(
+  level: Level,
+  modes: number,
+  factors: StokesFactors,
+  tolerance: number,
+  from?: StokesFields,
+): LevelSolution {
+  const { plane, loads } = level;
   const depth = standardModes(modes);
-  const factors = factorPlane(plane, symbolic, depth, HALF);
-  const flow = solveStokes(plane, depth, HALF, factors, faceDrives(depth, loads.slice(0, -1)), tolerance);
+  const drives = faceDrives(depth, loads.slice(0, -1));
+  const flow = solveStokes(plane, depth, HALF, factors, drives, tolerance, from);
   const { matrix, checks } = portMatrix(plane, depth, HALF, loads, flow);
-  return { level, modes, flow, matrix, checks };
+  return { level, modes, factors, flow, matrix, checks };
 }
 
 /** The fields as they are kept. */

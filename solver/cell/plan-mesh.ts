@@ -8,8 +8,16 @@ import { type CellShape, sharpCorners } from './shape.ts';
  * with about its power 3.5: edges grow with distance from walls and corners at a rate in proportion to it;
  * along walls, where flow in a shallow cell changes over one depth, they follow the depth; at a
  * sharp corner, where the flow's error goes with the size to the power 1.09, its third power.
+ *
+ * @param arcs edges on a quarter circle; the port matrix needs 3 / coarseness, a peak on a fillet more
  */
-export function planMesh(shape: CellShape, coarseness: number, where: string, maxTriangles: number): Mesh {
+export function planMesh(
+  shape: CellShape,
+  coarseness: number,
+  where: string,
+  maxTriangles: number,
+  arcs = 6 / coarseness,
+): Mesh {
   const { loops } = shape;
   const outer = loops[0];
   let extent = 0;
@@ -29,7 +37,7 @@ export function planMesh(shape: CellShape, coarseness: number, where: string, ma
         size: 0.03 * coarseness ** 3 * clearance(loops, x, y, extent),
       })),
       wallSize: (tag) => (tag === 0 ? wall : Number.POSITIVE_INFINITY),
-      perQuarter: Math.max(4, Math.ceil(8 / coarseness)),
+      perQuarter: Math.max(2, Math.round(arcs)),
       maxTriangles,
     },
     where,

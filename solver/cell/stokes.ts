@@ -11,6 +11,8 @@ export interface StokesFields {
   readonly across: Float64Array[];
   readonly pressure: Float64Array[];
   readonly iterations: number;
+  /** Square of the preconditioned residual of each pattern before the first iteration. */
+  readonly begun: Float64Array;
   /** Largest residual of mass conservation over the patterns, of that of the start, in the preconditioner's norm. */
   readonly residual: number;
 }
@@ -49,6 +51,7 @@ export function faceDrives(depth: DepthModes, loads: readonly Float64Array[]): S
  * pressure's mean over the depth the inverse Laplacian besides.
  *
  * @param tolerance of the residual, relative to the start
+ * @param from a solution of the same problem to go on from
  */
 export function solveStokes(
   plane: Plane,
@@ -57,7 +60,7 @@ export function solveStokes(
   factors: StokesFactors,
   loads: StokesLoads,
   tolerance: number,
-  mostIterations = 400,
+  from?: StokesFields,
 ): StokesFields {
   const n = loads.patterns;
   const N = depth.count;
@@ -110,19 +113,23 @@ export function solveStokes(
   };
 
   for (let k = 0; k < N; k += 1) {
-    u[k].set(loads.inPlane[k]);
-    solve(factors.inPlane[k], u[k], 2 * n);
+    u[k].set(from?.inPlane[k] ?? loads.inPlane[k]);
+    if (!from) solve(factors.inPlane[k], u[k], 2 * n);
   }
-  for (let m = 0; m < across && loads.across; m += 1) {
-    w[m].set(loads.across[m]);
-    solve(factors.across[m], w[m], n);
+  for (let m = 0; m < across; m += 1) {
+    if (from) w[m].set(from.across[m]);
+    else if (loads.across) {
+      w[m].set(loads.across[m]);
+      solve(factors.across[m], w[m], n);
+    }
   }
+  if (from) for (let j = 0; j < pressures; j += 1) p[j].set(from.pressure[j]);
   conserve(u, w, -1, r);
   if (loads.divergence) for (let j = 0; j < pressures; j += 1) axpy(1, loads.divergence[j], r[j]);
   precondition();
   for (let j = 0; j < pressures; j += 1) d[j].set(z[j]);
   const rz = dots(r, z, n);
-  const first = rz.slice();
+  const begun = from?.begun ?? rz.slice();
   // Where the start is divergence-free but for rounding there is nothing to iterate on.
   const floor = dots(u, loads.inPlane, n);
   const acrossEnergy = dots(w, loads.across ?? [], n);
@@ -131,11 +138,11 @@ export function solveStokes(
   const beta = new Float64Array(n);
   const worst = (): number => {
     let most = 0;
-    for (let c = 0; c < n; c += 1) if (rz[c] > floor[c]) most = Math.max(most, rz[c] / first[c]);
+    for (let c = 0; c < n; c += 1) if (rz[c] > floor[c]) most = Math.max(most, rz[c] / begun[c]);
     return Math.sqrt(most);
   };
-  let iterations = 0;
-  while (worst() > tolerance && iterations < mostIterations) {
+  let iterations = from?.iterations ?? 0;
+  while (worst() > tolerance && iterations < MOST_ITERATIONS) {
     iterations += 1;
     for (let k = 0; k < N; k += 1) {
       q.fill(0);
@@ -164,8 +171,11 @@ export function solveStokes(
     rz.set(next);
     for (let j = 0; j < pressures; j += 1) turn(z[j], beta, d[j]);
   }
-  return { patterns: n, inPlane: u, across: w, pressure: p, iterations, residual: worst() };
+  return { patterns: n, inPlane: u, across: w, pressure: p, iterations, begun, residual: worst() };
 }
+
+/** A flow that takes more is not coming. */
+const MOST_ITERATIONS = 500;
 
 /** y += a x */
 function axpy(a: number, x: Float64Array, y: Float64Array): void {
