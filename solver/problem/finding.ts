@@ -13,4 +13,13 @@ export interface Finding {
   readonly do: string;
   /** Place on the chip in metres, where there is one. */
   readonly at?: readonly [number, number];
+  /** The number found and the one it is held against, SI. */
+  readonly value?: number;
+  readonly threshold?: number;
+  /** Likely relative error of flow or shear, where it can be said. */
+  readonly error?: number;
+  /** The edit that does what `do` says, where that is a number: `ChipEdit` as plain data. */
+  readonly remedy?: { readonly label: string; readonly changes: readonly object[] };
+  /** Why the designer takes it as it is: it goes on being listed, but no longer decides. */
+  readonly accepted?: string;
 }

@@ -1,3 +1,5 @@
+import { checkFindings } from '../checks/check.ts';
+import { withAccepted } from '../checks/gather.ts';
 import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
 import type { ChannelResult, PieceResult, PortResult, Result } from '../chip/result.ts';
@@ -9,6 +11,7 @@ import { NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
 import { cellResults, inertiaFindings } from './cells.ts';
+import { stretchEvidence } from './evidence.ts';
 import { faultFindings } from './faults.ts';
 import { joinedEdges, joinedFlows } from './joined.ts';
 import { limitResults } from './limits.ts';
@@ -40,6 +43,8 @@ export function report(
   const between = (start: string, goal: string): Set<string> =>
     piecesBetween(chip, lumped, flow, start, goal);
   const limits = limitResults(chip, channels, cells, between);
+  const stretches = stretchEvidence(lumped, flow, pieces);
+  const checks = checkFindings({ chip, graph, fluid, stretches, ports, cells });
   return {
     format: 'channelwright-result',
     version: 1,
@@ -58,17 +63,21 @@ export function report(
       powerIn: flow.powerIn,
       dissipation: flow.dissipation,
     },
-    findings: [
-      ...graph.findings,
-      ...drives.findings,
-      ...faultFindings(graph, flow),
-      ...unresolvedFindings(lumped, flows),
-      ...limits.findings,
-      ...cellFindings,
-      ...inertiaFindings(lumped, chip, flow, pieces, fluid.density),
-      ...lumped.findings,
-      ...idealNote(graph, lumped),
-    ],
+    findings: withAccepted(
+      [
+        ...graph.findings,
+        ...drives.findings,
+        ...faultFindings(graph, flow),
+        ...unresolvedFindings(lumped, flows),
+        ...limits.findings,
+        ...cellFindings,
+        ...inertiaFindings(lumped, chip, flow, pieces, fluid.density),
+        ...lumped.findings,
+        ...idealNote(graph, lumped),
+        ...checks,
+      ],
+      chip.accepted,
+    ),
   };
 }
 

@@ -1,0 +1,40 @@
+import type { Chip } from '../chip/chip.ts';
+import type { Graph } from '../chip/graph.ts';
+import type { CellResult, PieceResult, PortResult } from '../chip/result.ts';
+import type { Fluid } from '../fluid/fluid.ts';
+import type { ProcessRules } from './process.ts';
+
+/** One stretch of channel with what flows in it. */
+export interface StretchEvidence {
+  /** "feed#2" */
+  readonly name: string;
+  /** Index into Graph.pieces. */
+  readonly piece: number;
+  readonly result: PieceResult;
+  /** Pa at its two ends, gauge. */
+  readonly pressure: readonly [number, number];
+  /** Mask widths at its ends, m. */
+  readonly width: readonly [number, number];
+  /** Of the narrow end, m. */
+  readonly hydraulicDiameter: number;
+  /** Of the narrow end, m². */
+  readonly area: number;
+}
+
+/** What the checks are made from: the chip, how the fluid reads it, and what was solved. */
+export interface Evidence {
+  readonly chip: Chip;
+  readonly graph: Graph;
+  readonly fluid: Fluid;
+  readonly stretches: readonly StretchEvidence[];
+  readonly ports: readonly PortResult[];
+  readonly cells: readonly CellResult[];
+}
+
+/** What the drawing alone is checked by. */
+export interface Drawn {
+  readonly chip: Chip;
+  readonly graph: Graph;
+  /** Null where no process is given: then only what every process must obey is checked. */
+  readonly rules: ProcessRules | null;
+}

@@ -1,0 +1,155 @@
+import type { Layer } from '../chip/chip.ts';
+import type { Evidence, StretchEvidence } from './evidence.ts';
+import type { Found, Gathered } from './gather.ts';
+import type { ProcessRules } from './process.ts';
+import { digits, length, METRE, percent, placeOf } from './words.ts';
+
+/** Above these the finding stands; they are told in `kinds.ts`. */
+const TURBULENT = 2000;
+const DEVELOPING = 0.1;
+const FLAT = 20;
+const LOOSE = 0.02;
+const BLOOD = 0.3e-3;
+const SOFT = 0.05;
+/** Below this Reynolds number an entrance is that of creeping flow, which solved junctions hold. */
+const CREEPING = 1;
+/** Excess pressure of a developing flow over ½ density × velocity²: a pipe; no duct has more by much. */
+const EXCESS = 1.31;
+
+/** Entrance length over hydraulic diameter: Durst, Ray, Ünsal and Bayoumi 2005, J. Fluids Eng. 127, 1154. */
+export function entranceLength(reynolds: number): number {
+  return (0.619 ** 1.6 + (0.0567 * reynolds) ** 1.6) ** (1 / 1.6);
+}
+
+/** What the solved numbers leave out, for every stretch, junction and the chip. */
+export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found: Gathered): void {
+  const { chip, graph, fluid } = evidence;
+  const bloody = isBlood(evidence);
+  for (const stretch of evidence.stretches) {
+    const piece = graph.pieces[stretch.piece]!;
+    const layer = chip.layers[piece.layerIndex]!;
+    const { x, y } = piece.path[piece.path.length >> 1]!;
+    const base = { where: stretch.name, at: placeOf(x, y) };
+    const add = (finding: Omit<Found, 'where' | 'at'>): void => found.add({ ...finding, ...base });
+    const reynolds = stretch.result.reynolds ?? 0;
+    if (reynolds > TURBULENT) {
+      add({
+        kind: 'turbulent',
+        severity: 'stop',
+        says: `The Reynolds number in ${stretch.name} is ${digits(reynolds)}, above 2000: the flow is not laminar there, and no figure of it holds.`,
+        do: `Slow the flow by a factor of ${digits(reynolds / TURBULENT)} or more.`,
+        value: reynolds,
+        threshold: TURBULENT,
+        off: reynolds / TURBULENT,
+      });
+    } else if (reynolds > CREEPING) entrance(stretch, reynolds, fluid.density, add);
+    const narrow = Math.min(...stretch.width, layer.depth / METRE);
+    if (bloody && narrow < BLOOD) {
+      add({
+        kind: 'blood-narrow',
+        severity: 'warn',
+        says: `${stretch.name} is ${length(narrow * METRE)} across; below 300 µm blood is no continuum: cells leave the walls and it seems thinner (Fåhræus and Lindqvist 1931).`,
+        do: 'Take the flow there for a lower bound, or measure it.',
+        value: narrow,
+        threshold: BLOOD,
+        off: BLOOD / narrow,
+      });
+    }
+    if (rules?.modulus && !layer.roof) softRoof(stretch, layer, rules, add);
+  }
+  flatChannels(evidence, found);
+  for (const cell of evidence.cells) {
+    if (cell.accuracy <= LOOSE || cell.accuracy >= 1) continue;
+    found.add({
+      kind: 'cell-accuracy',
+      severity: cell.accuracy > 5 * LOOSE ? 'warn' : 'note',
+      where: cell.id,
+      at: cell.at,
+      says: `${cell.id} is solved to ${percent(cell.accuracy)}; ${percent(LOOSE)} is usual.`,
+      do: 'Ask for more accuracy, or take it for the error of the split there.',
+      value: cell.accuracy,
+      threshold: LOOSE,
+      error: cell.accuracy,
+      off: cell.accuracy / LOOSE,
+    });
+  }
+}
+
+function entrance(
+  { name, result, hydraulicDiameter, area }: StretchEvidence,
+  reynolds: number,
+  density: number,
+  add: (finding: Omit<Found, 'where' | 'at'>) => void,
+): void {
+  const share = (hydraulicDiameter * entranceLength(reynolds)) / result.length;
+  if (share <= DEVELOPING) return;
+  const speed = Math.abs(result.flow ?? 0) / area;
+  const error = (EXCESS * density * speed ** 2) / 2 / Math.abs(result.pressureDrop);
+  add({
+    kind: 'entrance-length',
+    severity: share > 5 * DEVELOPING && error > 0.05 ? 'warn' : 'note',
+    says: `In ${name} the flow takes ${percent(Math.min(1, share))} of the length to develop (Re ${digits(reynolds)}; Durst et al. 2005): its pressure drop may be ${percent(error)} too low.`,
+    do: 'Take that for its error, make it longer, or slow the flow.',
+    value: share,
+    threshold: DEVELOPING,
+    error,
+    off: share / DEVELOPING,
+  });
+}
+
+/** By how much a soft roof that gives by x of the depth at the inlet lets more through. */
+function softRoof(
+  { name, pressure, width }: StretchEvidence,
+  layer: Layer,
+  rules: ProcessRules,
+  add: (finding: Omit<Found, 'where' | 'at'>) => void,
+): void {
+  const modulus = rules.modulus!;
+  const most = Math.max(Math.abs(pressure[0]), Math.abs(pressure[1]));
+  const x = (Math.max(...width) * most) / (modulus.number * (layer.depth / METRE));
+  if (x <= SOFT) return;
+  const error = ((1 + x) ** 4 - 1) / (4 * x) - 1;
+  const roof = { modulus: modulus.number, thickness: 5e-3, poisson: 0.5 };
+  add({
+    kind: 'soft-roof',
+    severity: 'warn',
+    says: `The roof of ${name} gives: W p/(E h) is ${digits(x)} at ${digits(most / 1000, 3)} kPa with ${digits(modulus.number / 1e6)} MPa (${modulus.source}); up to ${percent(error)} more flows than is reckoned.`,
+    do: `Give layer ${layer.id} its roof, so that it is reckoned with, or choose a rigid lid.`,
+    value: x,
+    threshold: SOFT,
+    error,
+    remedy: {
+      label: `give layer ${layer.id} a soft roof 5 mm thick`,
+      changes: [{ kind: 'put', list: 'layers', id: layer.id, part: { ...layer, roof } }],
+    },
+    off: x / SOFT,
+  });
+}
+
+function flatChannels({ chip }: Evidence, found: Gathered): void {
+  const layers = new Map(chip.layers.map((layer) => [layer.id, layer]));
+  for (const { id, layer: layerId, width, path } of chip.channels) {
+    const layer = layers.get(layerId)!;
+    const ratio = Math.max(Math.max(...width) / layer.depth, layer.depth / Math.min(...width));
+    if (ratio <= FLAT) continue;
+    const share =
+      layer.tolerance?.depth && 'share' in layer.tolerance.depth ? layer.tolerance.depth.share : null;
+    found.add({
+      kind: 'aspect-ratio',
+      severity: 'note',
+      where: id,
+      at: placeOf(...path[0]!),
+      says: `${id} is ${digits(ratio)} times as ${Math.max(...width) > layer.depth ? 'wide as deep' : 'deep as wide'}: an error of the smaller counts three times in its resistance${share === null ? '' : `, ${percent(3 * share)} for the layer’s tolerance`}.`,
+      do: 'Measure the smaller of the two, and give the layer its tolerance.',
+      value: ratio,
+      threshold: FLAT,
+      ...(share !== null && { error: 3 * share }),
+      off: ratio / FLAT,
+    });
+  }
+}
+
+function isBlood({ chip, fluid }: Evidence): boolean {
+  if ('name' in chip.fluid) return chip.fluid.name === 'blood';
+  return fluid.shear?.kind === 'casson';
+}

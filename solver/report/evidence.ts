@@ -1,0 +1,24 @@
+import type { StretchEvidence } from '../checks/evidence.ts';
+import type { PieceResult } from '../chip/result.ts';
+import type { Lumped } from '../lump/lump.ts';
+import type { NetworkSolution } from '../network/spec.ts';
+
+/** The stretches as the checks see them, with the sections and pressures that results leave out. */
+export function stretchEvidence(
+  lumped: Lumped,
+  flow: NetworkSolution,
+  pieces: readonly PieceResult[],
+): StretchEvidence[] {
+  return lumped.stretches.map(({ piece, from, to, width }, index) => {
+    const { narrow } = lumped.ducts[index];
+    return {
+      name: lumped.names[index],
+      piece,
+      result: pieces[index],
+      pressure: [flow.pressure[from] || 0, flow.pressure[to] || 0],
+      width,
+      hydraulicDiameter: narrow.hydraulicDiameter,
+      area: narrow.area,
+    };
+  });
+}
