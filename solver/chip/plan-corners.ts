@@ -18,10 +18,17 @@ interface Arm {
 
 /**
  * Outer corners of channels that end on one another at a site: where the sector between two
- * neighbouring arms exceeds half a turn, they are joined as one path would be.
+ * neighbouring arms exceeds half a turn, they are joined as one path would be. With `covered`, only arms
+ * whose channel is covered at that distance count.
  */
-export function siteCorners(drawing: Drawing, graph: Graph, site: number, layer: number): PlanBody[] {
-  const left = armsAt(drawing, graph, site, layer);
+export function siteCorners(
+  drawing: Drawing,
+  graph: Graph,
+  site: number,
+  layer: number,
+  covered: (channel: number, s: number) => boolean = () => true,
+): PlanBody[] {
+  const left = armsAt(drawing, graph, site, layer, covered);
   const corners: PlanBody[] = [];
   while (left.length > 1) {
     const first = left.shift()!;
@@ -54,14 +61,20 @@ function openSector(arms: Arm[], corners: PlanBody[]): void {
   }
 }
 
-function armsAt(drawing: Drawing, graph: Graph, site: number, layer: number): Arm[] {
+function armsAt(
+  drawing: Drawing,
+  graph: Graph,
+  site: number,
+  layer: number,
+  covered: (channel: number, s: number) => boolean,
+): Arm[] {
   const arms: Arm[] = [];
   for (const { piece, end } of graph.sites[site]!.arms) {
     const p = graph.pieces[piece]!;
     const s = end === 'from' ? p.start : p.stop;
     const total = drawing.elements.total(p.channelIndex);
     // an end taken on to another centreline covers nothing more
-    if (p.layerIndex !== layer || s < -TOUCH || s > total + TOUCH) continue;
+    if (p.layerIndex !== layer || s < -TOUCH || s > total + TOUCH || !covered(p.channelIndex, s)) continue;
     const id = end === 'to' ? drawing.elementAt(p.channelIndex, s) : drawing.elementAfter(p.channelIndex, s);
     const e = drawing.elements.at(id);
     const d = Math.min(Math.max(s - e.s0, 0), e.curve.length);

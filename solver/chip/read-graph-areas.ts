@@ -73,7 +73,7 @@ export function readPlaces(drawing: Drawing, links: Links, findings: Finding[]):
   for (let i = 0; i < chip.ports.length; i++) {
     const port = chip.ports[i]!;
     if (port.diameter === 0)
-      placePoint(drawing, links, all, port.id, port.at, layer.get(port.layer)!, ports[i]!);
+      placePoint(drawing, links, { all, index }, port.id, port.at, layer.get(port.layer)!, ports[i]!);
   }
   return { chambers, vias, ports, areas: all };
 }
@@ -115,14 +115,15 @@ function uniteOverlapping(
 function placePoint(
   drawing: Drawing,
   links: Links,
-  all: readonly Place[],
+  areas: { readonly all: readonly Place[]; readonly index: Flatbush | undefined },
   id: string,
   at: Point,
   layer: number,
   node: number,
 ): void {
   const [x, y] = at;
-  for (const p of all) {
+  for (const k of areas.index?.search(x, y, x, y).sort((a, b) => a - b) ?? []) {
+    const p = areas.all[k]!;
     if (p.layers.includes(layer) && inArea(p.area, x, y)) {
       links.unite(p.node, node);
       return;

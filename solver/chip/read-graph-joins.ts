@@ -1,3 +1,4 @@
+import { Problem } from '../problem/problem.ts';
 import { pointAt } from './geometry/curve.ts';
 import { CURVATURE, type Elements, H0, H1, LENGTH, S0, STRIDE, UX, UY, X0, Y0 } from './geometry/elements.ts';
 import { Meetings, meetElements } from './geometry/packed.ts';
@@ -13,6 +14,18 @@ export interface Encounters {
   sameLine: boolean;
 }
 
+/** Pairs of elements near each other beyond which a drawing is no network but a heap. */
+const MOST_PAIRS = 2e7;
+
+function tooMany(drawing: Drawing): Problem {
+  return new Problem(
+    'too-many',
+    `More than ${MOST_PAIRS / 1e6} million pairs of the ${drawing.elements.count} stretches of channel lie over each other.`,
+    'channels',
+    'Spread the channels out, or remove copies that lie on top of each other.',
+  );
+}
+
 /**
  * Joins between channels of one layer: centrelines that cross, touch or end on one another; and a
  * list of what overlaps without that. Candidates come from the index, never from all pairs.
@@ -23,6 +36,7 @@ export function joinChannels(drawing: Drawing, links: Links): Encounters {
   if (!index) return found;
   const { data, channel } = elements;
   const meetings = new Meetings();
+  let pairs = 0;
   for (let i = 0; i < elements.count; i++) {
     const near: number[] = index.search(
       boxes[4 * i]!,
@@ -39,6 +53,7 @@ export function joinChannels(drawing: Drawing, links: Links): Encounters {
       meetElements(elements, i, j, meetings);
       const { count } = meetings;
       for (let k = 0; k < count; k++) addJoin(elements, links, i, meetings.s[k]!, j, meetings.t[k]!);
+      if (++pairs > MOST_PAIRS) throw tooMany(drawing);
       if (count > 0) {
         const bent = data[i * STRIDE + CURVATURE] !== data[j * STRIDE + CURVATURE];
         if (count > 1 && !bent) found.sameLine = true;

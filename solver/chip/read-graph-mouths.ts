@@ -1,5 +1,5 @@
 import type { Finding } from '../problem/finding.ts';
-import { cuts, edgesNear, inArea, nearestEdge } from './geometry/area.ts';
+import { commonGround, cuts, edgesNear, inArea, nearestEdge } from './geometry/area.ts';
 import { type Body, endCorners, halfAt, loopsOverlap, outline } from './geometry/body.ts';
 import { um } from './geometry/centreline.ts';
 import { line, meet, nearest, pointAt, tangentAt } from './geometry/curve.ts';
@@ -174,11 +174,18 @@ function joinBeside(
     low = Math.min(low, s);
     high = Math.max(high, s);
   };
-  for (const i of run) {
-    const b = drawing.body(i);
-    for (const edge of outline(b)) {
-      if (inArea(place.area, edge.x0, edge.y0)) spread(i, edge.x0, edge.y0);
-      for (const s of cuts(place.area, edge)) spread(i, ...pointAt(edge, s));
+  for (const i of run) for (const [x, y] of commonGround(place.area, drawing.body(i))) spread(i, x, y);
+  if (low > high) {
+    // they touch without a corner in common: at the corner nearest to the area
+    let least = Infinity;
+    for (const i of run) {
+      for (const { x0, y0 } of outline(drawing.body(i))) {
+        const { distance } = nearestEdge(place.area, x0, y0);
+        if (distance >= least) continue;
+        least = distance;
+        const e = drawing.elements.at(i);
+        low = high = e.s0 + nearest(e.curve, x0, y0);
+      }
     }
   }
   const s = (low + high) / 2;

@@ -118,7 +118,7 @@ interface Vertex {
 }
 
 /** Centreline of a channel between two distances along it, the added ends included. */
-export function pathBetween(
+function pathBetween(
   drawing: Drawing,
   links: Links,
   channel: number,
@@ -164,8 +164,13 @@ export function pathBetween(
     endX = high === s1 ? d[k + X1]! : x0 + ux * (high - s0);
     endY = high === s1 ? d[k + Y1]! : y0 + uy * (high - s0);
   }
-  if (to > 0 && from < elements.total(channel)) path.push({ x: endX, y: endY, bulge: 0 });
-  if (to > elements.total(channel)) {
+  const total = elements.total(channel);
+  // a piece may lie wholly in an added length, which starts or ends at the drawn end
+  if (to <= 0)
+    path.push({ x: d[first[channel]! * STRIDE + X0]!, y: d[first[channel]! * STRIDE + Y0]!, bulge: 0 });
+  else if (from >= total) path.push({ x: d[last * STRIDE + X1]!, y: d[last * STRIDE + Y1]!, bulge: 0 });
+  else path.push({ x: endX, y: endY, bulge: 0 });
+  if (to > total) {
     const { x, y } = links.tail.get(channel)!;
     path.push({ x, y, bulge: 0 });
   }

@@ -1,5 +1,5 @@
 import type { Channel, Chip, Point } from '../../solver/chip/chip.ts';
-import { layer } from './drawings.ts';
+import { chamber, channel, chipOf, layer, port } from './drawings.ts';
 
 /** Small generator of uniform numbers (mulberry32), so that a failing seed can be named. */
 export function random(seed: number): () => number {
@@ -60,4 +60,47 @@ export function randomDrawing(seed: number, count = 14): Chip {
     targets: [],
     limits: [],
   };
+}
+
+/**
+ * A crowded drawing on a coarse raster: coincident ends, walls that touch exactly, channels on one line,
+ * paths that double back, bends that do not fit, holes on corners, a chamber in the midst.
+ */
+export function crowdedDrawing(seed: number): Chip {
+  const next = random(seed);
+  const pick = <T>(list: readonly T[]): T => list[Math.floor(next() * list.length)]!;
+  const at = (): [number, number] => [Math.floor(next() * 12) * 100, Math.floor(next() * 12) * 100];
+  const channels: Channel[] = [];
+  const count = 3 + Math.floor(next() * 8);
+  for (let i = 0; i < count; i++) {
+    const path = [at()];
+    for (let k = Math.floor(next() * 4); k >= 0; k--) {
+      const [x, y] = path[path.length - 1]!;
+      const [p, q] = at();
+      path.push(next() < 0.7 ? (next() < 0.5 ? [x, q] : [p, y]) : [p, q]);
+    }
+    const distinct = path.filter((p, k) => k === 0 || p[0] !== path[k - 1]![0] || p[1] !== path[k - 1]![1]);
+    if (distinct.length < 2) continue;
+    const width = pick([20, 50, 100, 100, 200]);
+    const bendRadius = next() < 0.3 ? pick([50, 100, 200]) : 0;
+    const on = next() < 0.8 ? 'flow' : 'upper';
+    channels.push(
+      channel(`c${i}`, distinct, next() < 0.2 ? [width, width / 2] : width, { bendRadius, layer: on }),
+    );
+  }
+  const well = chamber('w', [
+    [300, 300],
+    [600, 300],
+    [600, 600],
+    [300, 600],
+  ]);
+  return chipOf({
+    layers: [layer('flow', 50, pick([0, 5, 20])), layer('upper')],
+    channels,
+    chambers: next() < 0.5 ? [well] : [],
+    ports: channels.slice(0, 3).map((c) => {
+      const [x, y] = c.path[0]!;
+      return port(`p${c.id}`, [x / 1000, y / 1000], pick([0, 50, 100, 200, 300]), c.layer);
+    }),
+  });
 }

@@ -1,4 +1,5 @@
 import { tangentAt } from '../../chip/geometry/curve.ts';
+import { TOUCH } from '../../chip/geometry/tolerance.ts';
 import type { Graph } from '../../chip/graph.ts';
 import { type PlanBody, planShape } from '../../chip/plan.ts';
 import { siteCorners } from '../../chip/plan-corners.ts';
@@ -65,7 +66,9 @@ export function assemble(
     tagTo: tag(mouthAt(drawing, span.channel, span.high, 1)),
   }));
   for (const chamber of ground.chambers) bodies.push({ kind: 'chamber', chamber, tag: 0 });
-  for (const site of ground.sites) bodies.push(...siteCorners(drawing, graph, site, ground.layer));
+  const covered = (channel: number, s: number) =>
+    ground.spans.some((p) => p.channel === channel && p.low.s - TOUCH <= s && s <= p.high.s + TOUCH);
+  for (const site of ground.sites) bodies.push(...siteCorners(drawing, graph, site, ground.layer, covered));
   const minus = ground.holes.map(
     (hole): PlanBody => ({
       kind: 'disc',

@@ -1,8 +1,7 @@
 import type { Chip } from '../../chip/chip.ts';
-import { type Area, areasOverlap, cuts, disc, edgesNear, inArea, polygon } from '../../chip/geometry/area.ts';
-import { type Body, covers, halfAt, outline } from '../../chip/geometry/body.ts';
+import { type Area, areasOverlap, commonGround, disc, polygon } from '../../chip/geometry/area.ts';
+import { type Body, halfAt } from '../../chip/geometry/body.ts';
 import { nearest, pointAt } from '../../chip/geometry/curve.ts';
-import { TOUCH } from '../../chip/geometry/tolerance.ts';
 import { type Drawing, layerNumbers } from '../../chip/read-graph-drawing.ts';
 import { addSource, type Hole, type Sources, span } from './sources.ts';
 
@@ -37,18 +36,6 @@ function bodiesAt(drawing: Drawing, area: Area, layer: number): Body[] {
     .filter((i) => drawing.layerOf[drawing.elements.channel[i]!] === layer)
     .sort((p, q) => p - q)
     .map((i) => drawing.body(i));
-}
-
-function commonGround(area: Area, b: Body): [number, number][] {
-  const points: [number, number][] = [];
-  for (const e of outline(b)) {
-    if (inArea(area, e.x0, e.y0)) points.push([e.x0, e.y0]);
-    for (const s of cuts(area, e)) points.push(pointAt(e, s));
-  }
-  for (const e of edgesNear(area, b.minX - TOUCH, b.minY - TOUCH, b.maxX + TOUCH, b.maxY + TOUCH)) {
-    if (covers(b, e.x0, e.y0)) points.push([e.x0, e.y0]);
-  }
-  return points;
 }
 
 /** A rim closer to a wall than this share of the half width leaves a sliver no mesh can fill. */

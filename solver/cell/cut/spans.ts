@@ -1,3 +1,4 @@
+import { TOUCH } from '../../chip/geometry/tolerance.ts';
 import type { Graph } from '../../chip/graph.ts';
 import type { Drawing } from '../../chip/read-graph-drawing.ts';
 import { BEND_TURN, decayLength, legLength } from './bounds.ts';
@@ -152,6 +153,8 @@ export function barriersOf(drawing: Drawing, graph: Graph): Barrier[][] {
     for (const arm of graph.sites[site]!.arms) {
       const piece = graph.pieces[arm.piece]!;
       const s = arm.end === 'from' ? piece.start : piece.stop;
+      // an end that was taken on to the port's channel does not cover the port
+      if (s < -TOUCH || s > drawing.elements.total(piece.channelIndex) + TOUCH) continue;
       const known = list[piece.channelIndex]!;
       if (!known.some((b) => b.site === site && Math.abs(b.s - s) < 1)) known.push({ s, site });
     }

@@ -1,7 +1,7 @@
 import Flatbush from 'flatbush';
 import type { Point } from '../chip.ts';
-import { inLoop } from './body.ts';
-import { type Curve, curve, distanceTo, line, meet } from './curve.ts';
+import { type Body, covers, inLoop, outline } from './body.ts';
+import { type Curve, curve, distanceTo, line, meet, pointAt } from './curve.ts';
 import { TOUCH } from './tolerance.ts';
 
 /** A closed piece of the plan that is not a channel: a chamber's outline, or the disc of a hole. */
@@ -150,4 +150,17 @@ export function centroid(points: readonly Point[]): Point {
     my += ay / points.length;
   }
   return area === 0 ? [ox + mx, oy + my] : [ox + x / (3 * area), oy + y / (3 * area)];
+}
+
+/** Corners of the ground that an area and an element have in common; none where they only touch in less than TOUCH. */
+export function commonGround(area: Area, b: Body): [number, number][] {
+  const points: [number, number][] = [];
+  for (const e of outline(b)) {
+    if (inArea(area, e.x0, e.y0)) points.push([e.x0, e.y0]);
+    for (const s of cuts(area, e)) points.push(pointAt(e, s));
+  }
+  for (const e of edgesNear(area, b.minX - TOUCH, b.minY - TOUCH, b.maxX + TOUCH, b.maxY + TOUCH)) {
+    if (covers(b, e.x0, e.y0)) points.push([e.x0, e.y0]);
+  }
+  return points;
 }

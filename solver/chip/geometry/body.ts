@@ -143,11 +143,6 @@ export function endCorners(e: Element, atEnd: boolean): [number, number, number,
   return [x + uy * h, y - ux * h, x - uy * h, y + ux * h];
 }
 
-/** Place on an element at a distance along its channel. */
-export function placeAt(e: Element, s: number): [number, number] {
-  return pointAt(e.curve, s - e.s0);
-}
-
 /** Half width at a distance along the channel, constant beyond the element's ends. */
 export function halfAt(e: Element, s: number): number {
   const t = (s - e.s0) / (e.s1 - e.s0);

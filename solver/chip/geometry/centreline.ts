@@ -22,6 +22,7 @@ import {
   Y0,
   Y1,
 } from './elements.ts';
+import { TOUCH } from './tolerance.ts';
 
 /** One straight or round stretch of a channel: its centreline, where it lies along the channel, and its half widths. */
 export interface Element {
@@ -219,6 +220,12 @@ function rounded(channel: Channel, points: readonly Point[], curves: Curve[], fi
     }
     const t = fits * tans[i]!;
     const [vx, vy] = points[i]!;
+    if (!(fits > TOUCH)) {
+      push(curves, x, y, vx, vy);
+      x = vx;
+      y = vy;
+      continue;
+    }
     push(curves, x, y, vx - side.ux * t, vy - side.uy * t);
     x = vx + next.ux * t;
     y = vy + next.uy * t;
