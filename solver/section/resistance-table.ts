@@ -47,15 +47,8 @@ export class ResistanceTable {
     const values = new Float64Array(NODES);
     const middle = (piece.from + piece.to) / 2;
     const half = (piece.to - piece.from) / 2;
-    let size = 0;
     for (let k = 0; k < NODES; k += 1) {
-      const [conductance, served] = this.solve(
-        middle + half * Math.cos((Math.PI * (k + 0.5)) / NODES),
-        size,
-        where,
-      );
-      values[k] = 1 / conductance;
-      size = served;
+      values[k] = 1 / this.solve(middle + half * Math.cos((Math.PI * (k + 0.5)) / NODES), where);
     }
     const coefficients = chebyshev(values);
     const tail = Math.max(Math.abs(coefficients[NODES - 1]), Math.abs(coefficients[NODES - 2]));
@@ -64,14 +57,13 @@ export class ResistanceTable {
     else piece.halves = [emptyPiece(piece.from, middle), emptyPiece(middle, piece.to)];
   }
 
-  /** `start` is the mesh size that served a neighbour; returns the conductance and the size that served. */
-  private solve(parameter: number, start: number, where: string): readonly [number, number] {
+  private solve(parameter: number, where: string): number {
     const shape = this.shapeAt(parameter);
     const known = sharedSections.flow(shape.key, VALUES);
-    if (known) return [known, start];
-    const { solved, size } = solveFlow(shape, VALUES, where, start);
-    sharedSections.setFlow(shape.key, VALUES, solved.conductance);
-    return [solved.conductance, (size * shape.perimeter) / (4 * shape.area)];
+    if (known) return known;
+    const { conductance } = solveFlow(shape, VALUES, where).solved;
+    sharedSections.setFlow(shape.key, VALUES, conductance);
+    return conductance;
   }
 }
 

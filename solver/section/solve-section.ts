@@ -49,11 +49,10 @@ export interface SolvedFlow {
   readonly perQuarter: number;
 }
 
-/** The flow alone. `start` is the mesh size to begin with over the hydraulic diameter, where one is known. */
-export function solveFlow(shape: SectionShape, accuracy: number, where: string, start = 0): SolvedFlow {
+/** The flow alone. */
+export function solveFlow(shape: SectionShape, accuracy: number, where: string): SolvedFlow {
   const dh = (4 * shape.area) / shape.perimeter;
-  const first = Math.min(FIRST_SIZE, FIRST_SIZE_OF_DEPTH / dh) * (accuracy / 1e-3) ** 0.25;
-  let size = dh * (start || first);
+  let size = Math.min(FIRST_SIZE * dh, FIRST_SIZE_OF_DEPTH) * (accuracy / 1e-3) ** 0.25;
   let perQuarter = accuracy < 3e-5 ? 6 : 4;
   for (let round = 1; ; round += 1) {
     const solved = boundedFlow(shape, sectionMesh(shape, size, perQuarter, where));
