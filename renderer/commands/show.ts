@@ -48,6 +48,13 @@ export function showCommands(desk: Desk): Command[] {
         desk.view.patch({ overlay: name }),
       ),
     ),
+    show(
+      'streamlines',
+      'Streamlines in junctions',
+      ['9'],
+      'Lines of equal flow inside solved junctions, when near, with speed or wall shear shown.',
+      () => desk.view.patch({ streamlines: !desk.view.get().streamlines }),
+    ),
     show('fit', 'Whole chip', ['f'], 'Show the whole chip.', () => fitChip(desk)),
     show('near', 'Near', ['n'], 'Show the chosen parts as large as they fit.', () => {
       const { selection, size } = desk.view.get();

@@ -6,6 +6,7 @@ import type { Desk } from '../state/desk.ts';
 import type { Workbench } from '../state/workbench.ts';
 import { Bodies } from './bodies.ts';
 import { toScreen } from './camera.ts';
+import { CellArt } from './cell-art.ts';
 import { drawChannelWords } from './channel-words.ts';
 import { drawEdge, drawScaleBar } from './edge.ts';
 import { paintHand } from './hand-paint.ts';
@@ -66,6 +67,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
     readonly size: { width: number; height: number };
   };
 
+  const art = new CellArt(desk, () => painter.redraw('chip'));
   const painter = createPainter(container, desk.view.get().size, {
     chip: (ctx) =>
       frame((d, { camera, size }) => {
@@ -78,6 +80,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
           palette: look,
           ramp: d.shown.ramp,
         });
+        art.draw(ctx, d.shown, camera, size, look);
       })(),
     marks: (ctx) =>
       frame((d, { camera, size }) => {
@@ -107,7 +110,8 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       seen = view;
       if (view.size !== before.size) painter.resize(view.size);
       if (view.camera !== before.camera) painter.redraw('chip', 'marks', 'hand');
-      else if (view.overlay !== before.overlay) painter.redraw('chip', 'marks');
+      else if (view.overlay !== before.overlay || view.streamlines !== before.streamlines)
+        painter.redraw('chip', 'marks');
       if (view.selection !== before.selection || view.tool !== before.tool) painter.redraw('hand');
     }),
     desk.project.subscribe(() => painter.redraw('chip', 'marks', 'hand')),

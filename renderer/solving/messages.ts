@@ -1,4 +1,5 @@
 import type { Accuracy, ShapeSolution } from '../../solver/cell/cell.ts';
+import type { CellPicture } from '../../solver/cell/picture.ts';
 import type { CellShape } from '../../solver/cell/shape.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { ChipEdit } from '../../solver/chip/edit.ts';
@@ -16,6 +17,8 @@ export type Order =
   /** Solves one variant after another and sends each result. */
   | { readonly kind: 'sweep'; readonly id: number; readonly edits: readonly ChipEdit[] }
   | { readonly kind: 'cancel'; readonly id: number }
+  /** What is to be drawn inside a solved junction, with the flows of the newest answer. */
+  | { readonly kind: 'picture'; readonly id: number; readonly cell: string; readonly lines: number }
   /** Solved junctions that the project had kept, in answer to 'want'. */
   | { readonly kind: 'kept'; readonly cells: readonly KeptCell[] };
 
@@ -23,6 +26,11 @@ export type Order =
 export interface KeptCell {
   readonly key: string;
   readonly bytes: Uint8Array;
+}
+
+/** Local coordinates (m) of the picture stand on the plan at origin (nm) + 1e9 (x, y). */
+export interface PlacedPicture extends CellPicture {
+  readonly origin: readonly [number, number];
 }
 
 /** A refusal as it crosses the thread. */
@@ -63,5 +71,6 @@ export type News =
   | { readonly kind: 'want'; readonly keys: readonly string[] }
   /** A junction was solved, to be kept in the project. */
   | { readonly kind: 'keep'; readonly cell: KeptCell }
+  | { readonly kind: 'pictured'; readonly id: number; readonly picture: PlacedPicture | null }
   | { readonly kind: 'tried'; readonly id: number; readonly outcome: Outcome }
   | { readonly kind: 'swept'; readonly id: number; readonly index: number; readonly outcome: Outcome };

@@ -4,7 +4,7 @@ import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { SolveOptions } from '../../solver/solve.ts';
 import { createStore, type Store } from '../state/store.ts';
-import type { KeptCell, News, Order, Outcome, Refused } from './messages.ts';
+import type { KeptCell, News, Order, Outcome, PlacedPicture, Refused } from './messages.ts';
 
 /** The newest answer and what it is of. */
 export interface Solved {
@@ -47,6 +47,8 @@ export interface Solver {
   attempt(edit: ChipEdit): Promise<Outcome>;
   /** Results of variants, in order as they come; returns how to stop. */
   sweep(edits: readonly ChipEdit[], each: (index: number, outcome: Outcome) => void): () => void;
+  /** What is to be drawn inside a solved junction; null where it is not solved (any more). */
+  picture(cell: string, lines: number): Promise<PlacedPicture | null>;
   end(): void;
 }
 
@@ -62,6 +64,7 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
   /** Chips asked about and not yet answered, by number. */
   const asked = new Map<number, Chip>();
   const tries = new Map<number, (outcome: Outcome) => void>();
+  const pictures = new Map<number, (picture: PlacedPicture | null) => void>();
   const sweeps = new Map<number, (index: number, outcome: Outcome) => void>();
   let last = 0;
   const next = (): number => {
@@ -74,6 +77,11 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
     if (news.kind === 'tried') {
       tries.get(news.id)?.(news.outcome);
       tries.delete(news.id);
+      return;
+    }
+    if (news.kind === 'pictured') {
+      pictures.get(news.id)?.(news.picture);
+      pictures.delete(news.id);
       return;
     }
     if (news.kind === 'want') {
@@ -136,6 +144,13 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
       return () => {
         if (sweeps.delete(id)) thread.post({ kind: 'cancel', id });
       };
+    },
+    picture(cell, lines) {
+      const id = next();
+      return new Promise((resolve) => {
+        pictures.set(id, resolve);
+        thread.post({ kind: 'picture', id, cell, lines });
+      });
     },
     end: () => thread.end(),
   };

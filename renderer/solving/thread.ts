@@ -1,15 +1,17 @@
 import type { Accuracy, ShapeSolution } from '../../solver/cell/cell.ts';
 import type { CellSpec } from '../../solver/cell/cut/spec.ts';
 import { decodeSolution, encodeSolution } from '../../solver/cell/encode.ts';
+import { cellPicture } from '../../solver/cell/picture.ts';
 import { cellKey } from '../../solver/cell/solve-cell.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { applyEdit } from '../../solver/chip/edit.ts';
 import type { Graph } from '../../solver/chip/graph.ts';
-import { settleWaiting } from '../../solver/lump/cells.ts';
+import type { Result } from '../../solver/chip/result.ts';
+import { knownSolution, settleWaiting } from '../../solver/lump/cells.ts';
 import { emptyMemory } from '../../solver/memory.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { accuracyOf, type SolveOptions, solve } from '../../solver/solve.ts';
-import type { News, Order, Outcome, Refused } from './messages.ts';
+import type { News, Order, Outcome, PlacedPicture, Refused } from './messages.ts';
 
 /** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
 export interface CellHand {
@@ -39,6 +41,7 @@ export function solvingThread(
   let newest = 0;
   let due = false;
   let sent: Graph | null = null;
+  let last: Result | null = null;
   /** Keys the project was asked for, and answers of it that are still to come. */
   const wanted = new Set<string>();
   let open = 0;
@@ -75,6 +78,7 @@ export function solvingThread(
     } catch {
       // the outcome says why there is none
     }
+    last = outcome.ok ? outcome.result : null;
     const { waiting } = memory.cells;
     const news = graph && graph === sent ? 'same' : graph;
     tell({ kind: 'solved', id: newest, graph: news, outcome, waiting: outcome.ok ? waiting.length : 0 });
@@ -88,6 +92,14 @@ export function solvingThread(
     }
     soon();
   });
+  const pictureOf = (name: string, lines: number): PlacedPicture | null => {
+    const pressures = last?.cells.find(({ id }) => id === name)?.pressures;
+    if (!chip || !pressures) return null;
+    const spec = memory.cut(chip).cells.find((cell) => cell.name === name);
+    const solution = spec && knownSolution(spec, memory.cells);
+    const picture = solution && cellPicture(solution, pressures, lines);
+    return picture ? { ...picture, origin: spec.origin } : null;
+  };
   const soon = (): void => {
     if (due) return;
     due = true;
@@ -102,6 +114,8 @@ export function solvingThread(
 
   return (order) => {
     switch (order.kind) {
+      case 'picture':
+        return tell({ kind: 'pictured', id: order.id, picture: pictureOf(order.cell, order.lines) });
       case 'kept':
         open -= 1;
         for (const { key, bytes } of order.cells) {

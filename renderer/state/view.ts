@@ -50,7 +50,7 @@ export interface View {
   readonly files: FileWish | null;
   /** One sentence about what was not done and why; '' where there is nothing to say. */
   readonly says: string;
-  /** Speed with moving marks, where motion is allowed. */
+  /** Lines of equal flow inside solved junctions. */
   readonly streamlines: boolean;
 }
 

@@ -49,6 +49,12 @@ export function placeCells(
   return { cells, findings };
 }
 
+/** What memory holds of a cell, however accurate; null where it was not solved. */
+export function knownSolution(spec: CellSpec, memory: CellMemory): CellSolution | null {
+  const known = memory.known.get(textOf(spec.shape));
+  return known && !(known.found instanceof Problem) ? known.found : null;
+}
+
 /** Solves one waiting cell into memory. */
 export function solveWaiting(spec: CellSpec, accuracy: Accuracy, memory: CellMemory): void {
   solutionOf(spec, accuracy, false, memory);
