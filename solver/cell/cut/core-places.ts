@@ -1,7 +1,7 @@
 import type { Chip } from '../../chip/chip.ts';
 import { type Area, areasOverlap, commonGround, disc, polygon } from '../../chip/geometry/area.ts';
 import { type Body, halfAt } from '../../chip/geometry/body.ts';
-import { nearest, pointAt } from '../../chip/geometry/curve.ts';
+import { distanceTo, nearest, pointAt } from '../../chip/geometry/curve.ts';
 import { type Drawing, layerNumbers } from '../../chip/read-graph-drawing.ts';
 import { addSource, type Hole, type Sources, span } from './sources.ts';
 
@@ -20,7 +20,10 @@ export function chambers(chip: Chip, drawing: Drawing, found: Sources): void {
       span(found, b, corners, source, 1.5 * fillet);
     }
     found.holes.forEach((hole, k) => {
-      if (hole.layer === layer && areasOverlap(areas[i]!, hole.area)) addHole(found, source, k);
+      if (hole.layer !== layer || !areasOverlap(areas[i]!, hole.area)) return;
+      for (const edge of areas[i]!.edges) clearOf(hole, distanceTo(edge, hole.x, hole.y), hole.radius);
+      hole.area = disc(hole.x, hole.y, hole.radius);
+      addHole(found, source, k);
     });
   });
 }
@@ -38,7 +41,7 @@ function bodiesAt(drawing: Drawing, area: Area, layer: number): Body[] {
     .map((i) => drawing.body(i));
 }
 
-/** A rim closer to a wall than this share of the half width leaves a sliver no mesh can fill. */
+/** A rim closer to a wall than this share of the half width (in a chamber, of its radius) leaves a sliver no mesh can fill. */
 const SLIVER = 0.06;
 
 /**
@@ -50,9 +53,7 @@ export function holeContacts(drawing: Drawing, found: Sources): void {
     const under = bodiesAt(drawing, hole.area, hole.layer);
     for (const b of under) {
       const { offset, half } = footOf(hole, b);
-      for (const gap of [half - offset, half + offset]) {
-        if (Math.abs(gap - hole.radius) < SLIVER * half) hole.radius = gap + SLIVER * half;
-      }
+      for (const gap of [half - offset, half + offset]) clearOf(hole, gap, half);
     }
     hole.area = disc(hole.x, hole.y, hole.radius);
     for (const b of under) {
@@ -71,6 +72,11 @@ export function holeContacts(drawing: Drawing, found: Sources): void {
       span(found, b, corners, source, 0);
     }
   });
+}
+
+/** Widens a hole whose rim all but touches a wall at `distance` from its centre; `size` is what that is small against. */
+function clearOf(hole: Hole, distance: number, size: number): void {
+  if (Math.abs(distance - hole.radius) < SLIVER * size) hole.radius = distance + SLIVER * size;
 }
 
 /** Distance along an element to below a hole's centre, how far that lies from the centreline, and half the width. */

@@ -262,6 +262,27 @@ describe('where cells are', () => {
     expect(ducts(graph, cut)).toHaveLength(3);
   });
 
+  test('a rim that just touches a wall cuts it, and its port stays joined', () => {
+    const mid = read({ channels: [main], ports: [port('p', [1000, 0], 100)] }).cut;
+    expect(mid.cells.map((c) => c.faces.map((f) => f.kind))).toEqual([
+      ['cut', 'rim'],
+      ['cut', 'rim'],
+    ]);
+    const square = chamber('w', [
+      [0, -200],
+      [400, -200],
+      [400, 200],
+      [0, 200],
+    ]);
+    const feed = channel('a', [
+      [300, 0],
+      [1000, 0],
+    ]);
+    const { cut } = read({ channels: [feed], chambers: [square], ports: [port('p', [100, 0], 200)] });
+    expect(cut.cells[0]!.faces.map((f) => f.kind)).toEqual(['cut', 'rim']);
+    expect(cut.cells[0]!.shape.loops).toHaveLength(1);
+  });
+
   test('an end taken on to another centreline lies in the cell', () => {
     const { graph, cut } = read({ channels: [main, up('b', 1000, 40)], ports: [port('i', [0, 0])] });
     expect(cut.cells[0]!.faces).toHaveLength(3);
