@@ -49,9 +49,12 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
   }, []);
 
   // what is chosen on the sheet comes into view here
+  const followed = useRef<readonly string[]>([]);
   useLayoutEffect(() => {
     const first = selection[0];
-    if (first === undefined) return;
+    // only when something else is chosen: new figures must not move the cell at hand
+    if (first === undefined || followed.current === selection) return;
+    followed.current = selection;
     const index = rows.findIndex((row) => row.ref === first);
     const element = grid.current;
     if (index < 0 || !element) return;
