@@ -12,6 +12,8 @@ const KEYS = [
   'limits',
   'process',
   'accepted',
+  'rating',
+  'assay',
 ] as const;
 
 interface Part {

@@ -17,7 +17,10 @@ export type PartKind = 'head' | ListKind;
 export const LIST_KINDS = Object.keys(LISTS) as ListKind[];
 
 /** What is left of a chip without its lists. */
-export type Head = Pick<Chip, 'name' | 'note' | 'lengthUnit' | 'outline' | 'fluid' | 'process' | 'accepted'>;
+export type Head = Pick<
+  Chip,
+  'name' | 'note' | 'lengthUnit' | 'outline' | 'fluid' | 'process' | 'accepted' | 'rating' | 'assay'
+>;
 
 export interface Part {
   readonly kind: PartKind;
@@ -27,7 +30,7 @@ export interface Part {
 }
 
 export function headOf(chip: Chip): Head {
-  const { name, note, lengthUnit, outline, fluid, process, accepted } = chip;
+  const { name, note, lengthUnit, outline, fluid, process, accepted, rating, assay } = chip;
   return {
     name,
     note,
@@ -36,6 +39,8 @@ export function headOf(chip: Chip): Head {
     fluid,
     ...(process && { process }),
     ...(accepted && { accepted }),
+    ...(rating && { rating }),
+    ...(assay && { assay }),
   };
 }
 

@@ -1,6 +1,7 @@
 import type { FluidSpec } from '../fluid/spec.ts';
 import type { Profile } from '../section/profile.ts';
 import type { Acceptance, Process } from './making.ts';
+import type { Assay, Pump, Rating, Reservoir } from './running.ts';
 
 /**
  * The chip: the one thing that is edited. Plan lengths and depths are whole nanometres, so nothing
@@ -32,6 +33,9 @@ export interface Chip {
   readonly process?: Process;
   /** Findings taken as they are; absent rather than empty. */
   readonly accepted?: readonly Acceptance[];
+  /** What chip and fittings bear, and how long the assay takes; absent where not said. */
+  readonly rating?: Rating;
+  readonly assay?: Assay;
 }
 
 /** A tolerance: a share of the nominal value, or a length in nanometres. */
@@ -94,6 +98,9 @@ export interface Port {
   readonly drive: Drive;
   /** In series, from the outside to the chip; metres. */
   readonly tubing: readonly { readonly bore: number; readonly length: number }[];
+  /** What drives the port, and the vessel that it draws from or fills, where that is said. */
+  readonly pump?: Pump;
+  readonly reservoir?: Reservoir;
 }
 
 export type Drive =
@@ -111,7 +118,7 @@ export type Target = ({ readonly port: string } | { readonly channel: string }) 
 
 export interface LimitPlace {
   readonly name: string;
-  /** An id, or a route from port to port; the whole chip where absent. */
+  /** An id (of a layer too), or a route from port to port; the whole chip where absent. */
   readonly where?: string | readonly [string, string];
   /** m; with it the wall-hugging path is judged too. */
   readonly cellDiameter?: number;

@@ -6,6 +6,7 @@ import type { Drive, Layer, LengthUnit, Port, Roof, Tolerance, Via } from './chi
 import { readPoint } from './description-lists.ts';
 import { Fault, step, valueInWords } from './schema-fault.ts';
 import { choice, id, inMetres, keyed, list, pair, plan, quantity } from './schema-fields.ts';
+import { pump, reservoir } from './schema-running.ts';
 import { parseQuantity, wholeNm } from './units.ts';
 import { ratioToNumber } from './units-exact.ts';
 import { NM_PER_UNIT } from './units-write.ts';
@@ -163,6 +164,8 @@ export const port = (unit: LengthUnit) =>
       diameter: plan(unit).optional(),
       drive: drive(unit).optional(),
       tubing: list(tube(unit), BOUNDS.tubing).optional(),
+      pump: pump(unit).optional(),
+      reservoir: reservoir(unit).optional(),
     },
     { id: '"in"', at: '[1000, 13000]', layer: '"flow"' },
   ).transform(
@@ -174,7 +177,12 @@ export const port = (unit: LengthUnit) =>
           'Add "drive" with one of "pressure", "flow", "head" or "closed": true.',
         );
       }
-      return { ...value, diameter: value.diameter ?? 0, drive: value.drive, tubing: value.tubing ?? [] };
+      return defined({
+        ...value,
+        diameter: value.diameter ?? 0,
+        drive: value.drive,
+        tubing: value.tubing ?? [],
+      });
     }),
   );
 

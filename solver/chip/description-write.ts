@@ -14,6 +14,7 @@ import type {
 } from './chip.ts';
 import { FORMAT, VERSION } from './description.ts';
 import type { Process } from './making.ts';
+import type { Pump, Reservoir } from './running.ts';
 import { LENGTHS, NUMBERS } from './schema-making.ts';
 import type { Kind } from './units.ts';
 import { NM_PER_UNIT, planText, writeQuantity } from './units-write.ts';
@@ -101,7 +102,28 @@ function driveOf(drive: Drive, spell: Spell): Json {
   }
 }
 
-const portOf = ({ id, at, layer, diameter, drive, tubing }: Port, scale: number, spell: Spell): Json => ({
+function pumpOf({ pressure, flow, bore, volume }: Pump, spell: Spell): Json {
+  return {
+    ...(pressure === undefined ? {} : { pressure: spell(pressure, 'pressure') }),
+    ...(flow === undefined ? {} : { flow: spell(flow, 'flow') }),
+    ...(bore === undefined ? {} : { bore: spell(bore, 'length') }),
+    ...(volume === undefined ? {} : { volume: spell(volume, 'volume') }),
+  };
+}
+
+function reservoirOf({ bore, area, volume }: Reservoir, spell: Spell): Json {
+  return {
+    ...(bore === undefined ? {} : { bore: spell(bore, 'length') }),
+    ...(area === undefined ? {} : { area: spell(area, 'area') }),
+    ...(volume === undefined ? {} : { volume: spell(volume, 'volume') }),
+  };
+}
+
+const portOf = (
+  { id, at, layer, diameter, drive, tubing, pump, reservoir }: Port,
+  scale: number,
+  spell: Spell,
+): Json => ({
   id,
   at: [at[0] / scale, at[1] / scale],
   layer,
@@ -113,6 +135,8 @@ const portOf = ({ id, at, layer, diameter, drive, tubing }: Port, scale: number,
       length: spell(length, 'length'),
     })),
   }),
+  ...(pump && { pump: pumpOf(pump, spell) }),
+  ...(reservoir && { reservoir: reservoirOf(reservoir, spell) }),
 });
 
 function shearOf(shear: ShearModel, spell: Spell): Json {
@@ -239,5 +263,7 @@ export function writeDescription(chip: Chip): string {
   list('limits', chip.limits, (limit) => limitOf(limit, spell));
   if (chip.process) one('process', processOf(chip.process, scale, spell));
   list('accepted', chip.accepted ?? [], ({ kind, where, reason }) => ({ kind, where, reason }));
+  if (chip.rating) one('rating', { pressure: spell(chip.rating.pressure, 'pressure') });
+  if (chip.assay) one('assay', { time: spell(chip.assay.time, 'time') });
   return `{\n${lines.map((line) => `  ${line}`).join(',\n')}\n}\n`;
 }

@@ -9,6 +9,7 @@ import { checkChip } from './schema-check.ts';
 import { Fault, faultToProblem, parseWith, valueInWords } from './schema-fault.ts';
 import { choice, keyed, list, plan, readKeys, text } from './schema-fields.ts';
 import { accepted, process } from './schema-making.ts';
+import { assay, rating } from './schema-running.ts';
 
 /** The chip description: JSON text, version 1, which converts to the chip and back without loss. */
 
@@ -34,6 +35,8 @@ const KEYS: ReadonlySet<string> = new Set([
   'limits',
   'process',
   'accepted',
+  'rating',
+  'assay',
 ]);
 
 const NEEDS = {
@@ -61,6 +64,8 @@ function rest(unit: LengthUnit) {
     limits: list(limit, BOUNDS.limits).optional(),
     process: process(unit).optional(),
     accepted: accepted.optional(),
+    rating: rating.optional(),
+    assay: assay.optional(),
   });
 }
 
@@ -118,6 +123,8 @@ function chipOf(value: unknown, fallbackName: string): Chip {
     limits: parts.limits ?? [],
     ...(parts.process && { process: parts.process }),
     ...(parts.accepted && { accepted: parts.accepted }),
+    ...(parts.rating && { rating: parts.rating }),
+    ...(parts.assay && { assay: parts.assay }),
   };
 }
 

@@ -1,5 +1,5 @@
 import type { Chip } from './chip.ts';
-import { renamed } from './edit-rename.ts';
+import { borne, renamed } from './edit-rename.ts';
 import { LISTS, type ListName, type PartOf } from './schema-check.ts';
 import type { TopKey, TopOf } from './schema-chip.ts';
 import { Fault, quoted } from './schema-fault.ts';
@@ -215,6 +215,10 @@ export class EditDraft {
       if (this.#parts(other).some((part) => part.id === to)) throw this.#present(other, to, start);
     }
     const before = this.#chip;
+    // A limit of the layer would become one of the part that bears the name.
+    if (list === 'layers' && borne(before, to) && before.limits.some(({ where }) => where === id)) {
+      throw this.#present(list, to, start);
+    }
     // What already names `to` would follow the new owner back to the old id on undoing.
     if (renamed(before, list, to, id) !== before) throw this.#present(list, to, start);
     const parts = [...this.#parts(list)];

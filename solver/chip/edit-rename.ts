@@ -14,6 +14,10 @@ function mapped<T>(entries: readonly T[], change: (entry: T) => T): readonly T[]
   return next ?? entries;
 }
 
+/** Whether a channel, chamber, via or port bears an id; a limit that names it is then one of that part, not of a layer. */
+export const borne = (chip: Chip, id: string): boolean =>
+  [chip.channels, chip.chambers, chip.vias, chip.ports].some((parts) => parts.some((part) => part.id === id));
+
 function renamedLayer(chip: Chip, from: string, to: string): Chip {
   const onLayer = <T extends { readonly layer: string }>(part: T): T =>
     part.layer === from ? { ...part, layer: to } : part;
@@ -27,6 +31,9 @@ function renamedLayer(chip: Chip, from: string, to: string): Chip {
       if (a !== from && b !== from) return via;
       return { ...via, layers: [a === from ? to : a, b === from ? to : b] };
     }),
+    limits: mapped(chip.limits, (limit) =>
+      limit.where === from && !borne(chip, from) ? { ...limit, where: to } : limit,
+    ),
   };
 }
 

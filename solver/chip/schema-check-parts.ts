@@ -3,6 +3,7 @@ import type { Chamber, Channel, Layer, Point, Port, Tolerance, Via } from './chi
 import { at, Fault, quoted } from './schema-fault.ts';
 import { outlineFault } from './schema-outline.ts';
 import { between, notNegative, positive } from './schema-range.ts';
+import { checkPump, checkReservoir } from './schema-running.ts';
 import { metres } from './units.ts';
 import { formatQuantity } from './units-format.ts';
 
@@ -131,6 +132,9 @@ export function checkPort(port: Port): void {
       positive(tube.length, 'length', 'length');
     });
   });
+  const { pump, reservoir } = port;
+  if (pump) at(['pump'], () => checkPump(pump));
+  if (reservoir) at(['reservoir'], () => checkReservoir(reservoir));
 }
 
 /** What a layer's cross-section asks of a channel that lies on it. */

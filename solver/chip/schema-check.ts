@@ -12,6 +12,7 @@ import { checkFluid, checkLimit, checkTarget } from './schema-check-terms.ts';
 import { at, Fault, type Path, quoted } from './schema-fault.ts';
 import { checkAccepted, checkProcess } from './schema-making.ts';
 import { nearest } from './schema-nearest.ts';
+import { checkAssay, checkRating } from './schema-running.ts';
 
 /** The lists of a chip whose entries bear ids. */
 export const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports'] as const;
@@ -113,7 +114,11 @@ function each<T>(
 }
 
 /** Targets and limits name what is there. */
-function checkTerms(chip: Chip, others: ReadonlyMap<string, ListName>): void {
+function checkTerms(
+  chip: Chip,
+  layers: ReadonlyMap<string, Layer>,
+  others: ReadonlyMap<string, ListName>,
+): void {
   const named = (id: string, list: 'ports' | 'channels', ...path: Path): void => {
     if (others.get(id) === list) return;
     throw unknownId(
@@ -131,8 +136,10 @@ function checkTerms(chip: Chip, others: ReadonlyMap<string, ListName>): void {
   each('limits', chip.limits, (limit) => {
     const { where } = limit;
     if (typeof where === 'string') {
-      if (!others.has(where))
-        throw unknownId(where, 'channel, chamber, via or port', others.keys(), ['where']);
+      if (!others.has(where) && !layers.has(where)) {
+        const known = [...others.keys(), ...layers.keys()];
+        throw unknownId(where, 'channel, chamber, via, port or layer', known, ['where']);
+      }
     } else if (where) {
       for (const [j, id] of where.entries()) named(id, 'ports', 'where', j);
     }
@@ -192,16 +199,18 @@ export function checkChip(chip: Chip, fresh: (part: object) => boolean = () => t
     throw new Fault('range', 'must be above zero.', 'Give the size of the chip.', ['outline', key]);
   }
   if (fresh(chip.fluid)) at(['fluid'], () => checkFluid(chip.fluid));
-  const { process, accepted } = chip;
+  const { process, accepted, rating, assay } = chip;
   if (process && fresh(process)) at(['process'], () => checkProcess(process));
   if (accepted && fresh(accepted)) at(['accepted'], () => checkAccepted(accepted));
+  if (rating && fresh(rating)) at(['rating'], () => checkRating(rating));
+  if (assay && fresh(assay)) at(['assay'], () => checkAssay(assay));
   const { layers, others } = byId(chip);
   const layerAt = finder(layers);
   const all = <L extends ListName>(list: L): void => {
     each(list, chip[list] as readonly PartOf[L][], (part) => CHECKS[list](part, layerAt, fresh(part)));
   };
   LISTS.forEach(all);
-  checkTerms(chip, others);
+  checkTerms(chip, layers, others);
 }
 
 /** The same for an edit that put parts in the place of others of the same ids, and changed nothing else. */

@@ -3,6 +3,7 @@ import type { FluidSpec } from '../fluid/spec.ts';
 import { BOUNDS } from './bounds.ts';
 import type { Chip, Limit, Target } from './chip.ts';
 import type { Acceptance, Process } from './making.ts';
+import type { Assay, Rating } from './running.ts';
 import { checkChip } from './schema-check.ts';
 import { nm } from './schema-data.ts';
 import { PART } from './schema-data-parts.ts';
@@ -10,6 +11,7 @@ import { fluid, limits, targets } from './schema-data-terms.ts';
 import { Fault, faultToProblem, parseWith } from './schema-fault.ts';
 import { choice, keyed, list, text } from './schema-fields.ts';
 import { accepted, orNone, processData } from './schema-making.ts';
+import { assayData, ratingData } from './schema-running.ts';
 
 /** The keys of a chip that are set whole. */
 export interface TopOf {
@@ -23,6 +25,8 @@ export interface TopOf {
   /** Null takes the key away. */
   readonly process: Process | null;
   readonly accepted: readonly Acceptance[] | null;
+  readonly rating: Rating | null;
+  readonly assay: Assay | null;
 }
 export type TopKey = keyof TopOf;
 
@@ -36,15 +40,19 @@ export const TOP: { readonly [K in TopKey]: z.ZodType<TopOf[K]> } = {
   limits,
   process: orNone(processData),
   accepted: orNone(accepted),
+  rating: orNone(ratingData),
+  assay: orNone(assayData),
 };
 
-const { process: _process, accepted: _accepted, ...NEEDED } = TOP;
+const { process: _process, accepted: _accepted, rating: _rating, assay: _assay, ...NEEDED } = TOP;
 
 const whole = keyed(
   {
     ...NEEDED,
     process: processData.exactOptional(),
     accepted: accepted.exactOptional(),
+    rating: ratingData.exactOptional(),
+    assay: assayData.exactOptional(),
     layers: list(PART.layers, BOUNDS.layers),
     channels: list(PART.channels, BOUNDS.channels),
     chambers: list(PART.chambers, BOUNDS.chambers),

@@ -6,6 +6,7 @@ import type { ListName, PartOf } from './schema-check.ts';
 import { byKey, byKind, field, kind, nm, readNm, si } from './schema-data.ts';
 import { at, Fault } from './schema-fault.ts';
 import { choice, id, keyed, list, pair, readId, readKeys, readList } from './schema-fields.ts';
+import { pumpData, reservoirData } from './schema-running.ts';
 
 /**
  * Layers, channels, chambers, vias and ports that come as data, with exactly the keys of chip.ts. Channels
@@ -131,6 +132,8 @@ const port: z.ZodType<Port> = keyed(
     diameter: nm,
     drive,
     tubing: list(keyed({ bore: si, length: si }, { bore: '5e-4', length: '0.3' }), BOUNDS.tubing),
+    pump: pumpData.exactOptional(),
+    reservoir: reservoirData.exactOptional(),
   },
   { id: '"in"', at: '[0, 0]', layer: '"flow"', diameter: '0', drive: '{ "kind": "closed" }', tubing: '[]' },
 );

@@ -146,14 +146,25 @@ const drive: fc.Arbitrary<Drive> = fc.oneof(
 );
 
 const port = (id: string, layers: readonly string[]): fc.Arbitrary<Port> =>
-  fc.record({
-    id: fc.constant(id),
-    at: fc.tuple(plan, plan),
-    layer: fc.constantFrom(...layers),
-    diameter: fc.oneof(fc.constant(0), length),
-    drive,
-    tubing: fc.array(fc.record({ bore: size, length: size }), { maxLength: 2 }),
-  });
+  fc.record(
+    {
+      id: fc.constant(id),
+      at: fc.tuple(plan, plan),
+      layer: fc.constantFrom(...layers),
+      diameter: fc.oneof(fc.constant(0), length),
+      drive,
+      tubing: fc.array(fc.record({ bore: size, length: size }), { maxLength: 2 }),
+      pump: fc.oneof(
+        fc.record({ pressure: size }),
+        fc.record({ flow: size, bore: size, volume: size }, { requiredKeys: ['flow'] }),
+      ),
+      reservoir: fc.oneof(
+        fc.record({ bore: size, volume: size }, { requiredKeys: ['bore'] }),
+        fc.record({ area: size }),
+      ),
+    },
+    { requiredKeys: ['id', 'at', 'layer', 'diameter', 'drive', 'tubing'] },
+  );
 
 const temperature = fc.double({ min: 270, max: 380, noNaN: true });
 const fluid: fc.Arbitrary<FluidSpec> = fc.oneof(
@@ -213,7 +224,11 @@ const target = (ports: readonly string[], channels: readonly string[]): fc.Arbit
     .map(([a, b, within]): Target => ({ ...a, ...b, within }));
 };
 
-const limit = (ids: readonly string[], ports: readonly string[]): fc.Arbitrary<Limit> => {
+const limit = (
+  ids: readonly string[],
+  ports: readonly string[],
+  layers: readonly string[],
+): fc.Arbitrary<Limit> => {
   const stated = fc.oneof(
     size.map((shear) => ({ shear })),
     fc.tuple(size, share).map(([low, area]) => ({ floor: [low, low * 2] as const, area })),
@@ -231,7 +246,7 @@ const limit = (ids: readonly string[], ports: readonly string[]): fc.Arbitrary<L
   );
   const routes = ports.length < 2 ? [] : [fc.constant([ports[0]!, ports[1]!] as const)];
   const place = fc.record(
-    { name: word, where: fc.oneof(fc.constantFrom(...ids), ...routes), cellDiameter: size },
+    { name: word, where: fc.oneof(fc.constantFrom(...ids, ...layers), ...routes), cellDiameter: size },
     { requiredKeys: ['name'] },
   );
   return fc.tuple(place, stated).map(([a, b]) => ({ ...a, ...b }) as Limit);
@@ -257,6 +272,8 @@ const making = fc.record(
       fc.record({ kind: fc.constantFrom('least-width', 'least-gap'), where: word, reason: word }),
       { minLength: 1, maxLength: 3, selector: ({ kind, where }) => `${kind} ${where}` },
     ),
+    rating: fc.record({ pressure: size }),
+    assay: fc.record({ time: size }),
   },
   { requiredKeys: [] },
 );
@@ -287,7 +304,7 @@ export const randomChip: fc.Arbitrary<Chip> = fc
         ports: sequence(ports, (id) => port(id, layers)),
         fluid,
         targets: fc.array(target(ports, channels), { maxLength: 3 }),
-        limits: fc.array(limit(ids, ports), { maxLength: 3 }),
+        limits: fc.array(limit(ids, ports, layers), { maxLength: 3 }),
         making,
       })
       .map(({ making: made, ...chip }): Chip => {

@@ -70,6 +70,14 @@ export function randomEdit(chip: Chip, random: () => number, serial: number): Ch
       });
     } else if (sort < 0.987) {
       changes.push({ kind: 'set', key: 'process', value: random() < 0.5 ? null : { kind: 'milling' } });
+    } else if (sort < 0.991) {
+      changes.push({ kind: 'set', key: 'assay', value: random() < 0.5 ? null : { time: 1 + whole(1e5) } });
+    } else if (sort < 0.994) {
+      changes.push({
+        kind: 'set',
+        key: 'rating',
+        value: random() < 0.5 ? null : { pressure: 1 + whole(1e6) },
+      });
     } else
       changes.push({ kind: 'set', key: 'outline', value: { width: 1 + whole(1e9), height: 1 + whole(1e9) } });
   }
