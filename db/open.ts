@@ -1,12 +1,14 @@
 import { copyFile, mkdir } from 'node:fs/promises';
 import { basename, join } from 'node:path';
 import { Problem } from '../solver/problem/problem.ts';
+import type { Content } from './check/content.ts';
 import { Damage } from './check/damage.ts';
 import { migrate } from './layout/layout.ts';
 import { VERSION } from './layout/tables.ts';
 import { syncFile, writeProblem } from './place/replace.ts';
 import { Project } from './project.ts';
 import { checkedVersion, contentOf, hasLog, isOfTheDisk, openInMemory } from './read.ts';
+import { sameBytes } from './store/hash.ts';
 import { Store } from './store/store.ts';
 import { projectProblem } from './words.ts';
 
@@ -20,6 +22,7 @@ export async function openForWork(
 ): Promise<{ readonly project: Project; readonly notes: readonly string[] }> {
   const version = await checkedVersion(path);
   const notes: string[] = [];
+  let checked: Content | null = null;
   if (version < VERSION) {
     // Tried in memory first: what cannot be brought up is not touched.
     const trial = await openInMemory(path).catch((error) => {
@@ -35,10 +38,10 @@ export async function openForWork(
     const aside = await setAside(path, userData, version);
     notes.push(`The project was brought up from an older form; the file as it was is kept as ${aside}.`);
   } else {
-    telling(path, () => {
+    checked = telling(path, () => {
       const checking = Store.open(path, 'read');
       try {
-        contentOf(checking, version);
+        return contentOf(checking, version);
       } finally {
         checking.close();
       }
@@ -48,7 +51,9 @@ export async function openForWork(
     const store = Store.open(path, 'write');
     try {
       if (version < VERSION) migrate(store, version);
-      return new Project(store, path, contentOf(store, VERSION), false);
+      // What was checked a moment ago is not gone through again, where it is still the last.
+      const content = checked && isStill(store, checked) ? checked : contentOf(store, VERSION);
+      return new Project(store, path, content, false);
     } catch (error) {
       store.close();
       throw error;
@@ -71,6 +76,11 @@ export async function openForReading(path: string): Promise<Project> {
       throw error;
     }
   });
+}
+
+function isStill(store: Store, content: Content): boolean {
+  const last = store.get('SELECT seq, hash FROM journal ORDER BY seq DESC LIMIT 1');
+  return last?.seq === content.seq && sameBytes(last.hash, content.hash);
 }
 
 async function setAside(path: string, userData: string, version: number): Promise<string> {
