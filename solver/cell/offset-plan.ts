@@ -26,8 +26,8 @@ export function offsetPlan(loops: Shape, distance: number): Edge[][] | null {
         return { ...edge, x: edge.x + d * by, y: edge.y - d * bx };
       }
       // Shift along both tangents so that the distances to both lines are da and db.
-      const alongA = -db / cross;
-      const alongB = da / cross;
+      const alongA = db / cross;
+      const alongB = -da / cross;
       return { ...edge, x: edge.x + alongA * ax + alongB * bx, y: edge.y + alongA * ay + alongB * by };
     });
     for (let i = 0; i < n; i += 1) {
