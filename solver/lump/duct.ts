@@ -1,6 +1,6 @@
 import type { Profile } from '../section/profile.ts';
 import { type Section, sectionOf } from '../section/section-of.ts';
-import { taperResistance } from '../section/taper.ts';
+import { taperMeans } from '../section/taper.ts';
 
 /**
  * A unit length of channel as the network sees it, free of viscosity and flow. For a stretch whose
@@ -20,12 +20,6 @@ export interface Duct {
   /** Relative error of the resistance, as the sections know it. */
   readonly error: number;
 }
-
-/** Gauss-Legendre on [0, 1], five points. */
-const POINTS = [0.04691007703066802, 0.23076534494715845, 0.5, 0.7692346550528415, 0.953089922969332];
-const WEIGHTS = [
-  0.11846344252809454, 0.23931433524968324, 0.28444444444444444, 0.23931433524968324, 0.11846344252809454,
-];
 
 /**
  * @param width mask width at both ends and
@@ -48,19 +42,11 @@ export function ductOf(
     };
   }
   const last = sectionOf(profile, width[1], depth, where);
-  let area = 0;
-  let wall = 0;
-  let force = 0;
-  for (let i = 0; i < POINTS.length; i += 1) {
-    const here = sectionOf(profile, width[0] + (width[1] - width[0]) * POINTS[i]!, depth, where);
-    area += WEIGHTS[i]! * here.area;
-    wall += WEIGHTS[i]! * here.perimeter;
-    force += (WEIGHTS[i]! * here.area) / here.conductance;
-  }
+  const { resistance, area, perimeter, force } = taperMeans(profile, width[0], width[1], depth, where);
   return {
-    resistance: taperResistance(profile, width[0], width[1], depth, 1, where),
+    resistance,
     area,
-    meanShear: force / wall,
+    meanShear: force / perimeter,
     narrow: first.conductance <= last.conductance ? first : last,
     error: Math.max(first.error, last.error),
   };
