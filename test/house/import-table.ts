@@ -34,6 +34,7 @@ export const TABLE: Readonly<Record<string, Room>> = {
   'solver/exposure': {
     ours: [
       'solver/problem',
+      'solver/mesh',
       'solver/fluid',
       'solver/section',
       'solver/chip',
