@@ -11,7 +11,7 @@ import { verify } from '../verify/row.ts';
 /** Port matrix of a chip (viscosity 1, m^3): cells and ducts assembled densely, all but ports eliminated. */
 function portMatrix(
   chip: Chip,
-  options: CutOptions,
+  options: Partial<CutOptions>,
   accuracy: number,
 ): { matrix: number[][]; cells: number } {
   const graph = readGraph(chip);
