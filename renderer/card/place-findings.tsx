@@ -1,5 +1,7 @@
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
+import { AcceptFinding } from './accept-finding.tsx';
+import { RemedyButton } from './remedy-button.tsx';
 
 /** What the checks and limits have to say about some places, each with what to do. */
 export function PlaceFindings({ ids }: { readonly ids: readonly string[] }) {
@@ -23,10 +25,15 @@ export function PlaceFindings({ ids }: { readonly ids: readonly string[] }) {
           </p>
         );
       })}
-      {findings.map((finding) => (
-        <div key={finding.kind + finding.where + finding.says} className="finding">
+      {findings.map((finding, i) => (
+        // biome-ignore lint/suspicious/noArrayIndexKey: two findings may be alike to the letter
+        <div key={`${finding.kind} ${i}`} className="finding">
           <p>{finding.says}</p>
-          <p className="soft">{finding.do}</p>
+          <p className="soft">
+            {finding.accepted === undefined ? finding.do : `Accepted: ${finding.accepted}`}
+          </p>
+          {finding.remedy && finding.accepted === undefined && <RemedyButton remedy={finding.remedy} />}
+          <AcceptFinding finding={finding} />
         </div>
       ))}
     </section>

@@ -23,7 +23,13 @@ export async function startHost(files: readonly string[] = []): Promise<Host> {
     {
       cwd: ROOT,
       // files are written into the same folder, so that nothing of the person's is touched
-      env: { ...process.env, CHANNELWRIGHT_DATA: data, CHANNELWRIGHT_NO_OPEN: '1', HOME: data },
+      env: {
+        ...process.env,
+        CHANNELWRIGHT_DATA: data,
+        CHANNELWRIGHT_NO_OPEN: '1',
+        HOME: data,
+        NODE_ENV: 'production',
+      },
       stdio: ['ignore', 'pipe', 'pipe'],
     },
   );

@@ -1,0 +1,37 @@
+import { useState } from 'react';
+import { readEdit } from '../../solver/chip/edit-read.ts';
+import type { Finding } from '../../solver/problem/finding.ts';
+import { remedyOf } from '../edits/remedy.ts';
+import { usePage } from '../page/context.tsx';
+import { useStore } from '../state/store.ts';
+import { verdictChanges } from './verdict-changes.ts';
+
+/** Does what a finding advises; shows first, on request, what else that changes. */
+export function RemedyButton({ remedy }: { readonly remedy: NonNullable<Finding['remedy']> }) {
+  const { desk } = usePage();
+  const chip = useStore(desk.project)!.document.chip;
+  const { result } = useStore(desk.solver.solved);
+  const [effect, setEffect] = useState('');
+  const label = remedy.label.charAt(0).toUpperCase() + remedy.label.slice(1);
+  const tryOut = (): void => {
+    void desk.solver.attempt(readEdit(remedy)).then((outcome) => {
+      if (!outcome.ok) setEffect(`It can't be done: ${outcome.problem.what}`);
+      else setEffect(verdictChanges(chip, result, outcome.result));
+    });
+  };
+  return (
+    <p>
+      <button type="button" className="quiet" onClick={() => desk.alter(remedyOf(remedy, chip.layers))}>
+        {label}
+      </button>{' '}
+      <button type="button" className="quiet" onClick={tryOut}>
+        What else would change?
+      </button>
+      {effect && (
+        <span className="soft" role="status">
+          {effect}
+        </span>
+      )}
+    </p>
+  );
+}
