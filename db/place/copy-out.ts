@@ -1,6 +1,6 @@
 import { rm } from 'node:fs/promises';
 import { readProjectChip } from '../read.ts';
-import { moveOver, moveToFree, siblingOf, syncFile, writeProblem } from './replace.ts';
+import { moveOver, moveToFree, removeLeftovers, siblingOf, syncFile, writeProblem } from './replace.ts';
 
 /** What can write a whole copy of itself. */
 export interface Source {
@@ -9,6 +9,7 @@ export interface Source {
 
 /** Writes a whole copy of a project to `path`, checked before it takes the place of what was there. */
 export async function copyOut(source: Source, path: string, replace: boolean): Promise<void> {
+  await removeLeftovers(path);
   const sibling = siblingOf(path);
   try {
     await source.backup(sibling);

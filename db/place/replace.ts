@@ -1,5 +1,5 @@
 import { constants } from 'node:fs';
-import { copyFile, link, open, rename, rm } from 'node:fs/promises';
+import { copyFile, link, open, readdir, rename, rm, stat } from 'node:fs/promises';
 import { basename, dirname, join } from 'node:path';
 import { setTimeout as wait } from 'node:timers/promises';
 import { Problem } from '../../solver/problem/problem.ts';
@@ -7,6 +7,8 @@ import { Problem } from '../../solver/problem/problem.ts';
 /** Other programs (virus scanners, sync clients) may hold a file for a moment. */
 const TRIES = 10;
 const WITHIN_MS = 2000;
+/** No write takes so long. */
+const LEFT_MS = 3_600_000;
 const BUSY = new Set(['EPERM', 'EACCES', 'EBUSY', 'EEXIST', 'ENOTEMPTY']);
 
 let counter = 0;
@@ -15,6 +17,18 @@ let counter = 0;
 export function siblingOf(path: string): string {
   counter += 1;
   return join(dirname(path), `.${basename(path)}.${process.pid}-${Date.now().toString(36)}-${counter}.new`);
+}
+
+/** Takes away what a write of `path` left beside it that was cut off long ago, by a kill or a loss of power. */
+export async function removeLeftovers(path: string): Promise<void> {
+  const folder = dirname(path);
+  const begin = `.${basename(path)}.`;
+  for (const name of await readdir(folder).catch(() => [])) {
+    if (!name.startsWith(begin) || !name.endsWith('.new')) continue;
+    const file = join(folder, name);
+    const there = await stat(file).catch(() => null);
+    if (there && Date.now() - there.mtimeMs > LEFT_MS) await rm(file, { force: true }).catch(() => undefined);
+  }
 }
 
 /** Makes what was written to `path` outlast a loss of power. */
@@ -73,6 +87,7 @@ export async function moveToFree(from: string, to: string): Promise<void> {
 
 /** Writes `content` as the whole of `path`: a failure at any moment leaves what was there. */
 export async function replaceFile(path: string, content: string | Uint8Array, replace = true): Promise<void> {
+  await removeLeftovers(path);
   const sibling = siblingOf(path);
   try {
     const file = await open(sibling, 'wx');

@@ -33,6 +33,8 @@ export async function serve(
   const stop = async (): Promise<void> => {
     if (stopping) return;
     stopping = true;
+    const says = 'The program stops; everything is kept. Start it again to go on.';
+    for (const window of sessions.windows()) sessions.emit(window, 'closing', { says });
     await sessions.close();
     await host.close();
     process.exit(0);

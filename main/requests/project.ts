@@ -1,5 +1,6 @@
 import { basename, dirname, extname, join } from 'node:path';
 import { Backups } from '../../db/backup/backups.ts';
+import { removeFile } from '../../db/place/copy-out.ts';
 import { freeDraft } from '../../db/place/drafts.ts';
 import { replaceFile } from '../../db/place/replace.ts';
 import { Workplace } from '../../db/workplace.ts';
@@ -34,7 +35,12 @@ export const projectRequests: Handlers<
   'project.upload': async (session, { name, bytes }) => {
     const path = await freeDraft(session.settings, basename(name, extname(name)));
     await replaceFile(path, bytes, false);
-    return await session.open(path);
+    try {
+      return await session.open(path);
+    } catch (error) {
+      await removeFile(path);
+      throw error;
+    }
   },
   'project.close': async (session) => {
     await session.close();
