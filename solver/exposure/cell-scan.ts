@@ -9,12 +9,19 @@ export interface CellScan {
   /** Volumes by their stress: ∫ stress^γ dV is the dose of this times the flow. */
   readonly spread: History;
   /** Largest rate at which a line along the flow grows, the scalar stress there, and where on the plan. */
-  readonly stretch: { readonly rate: number; readonly stress: number; readonly x: number; readonly y: number };
+  readonly stretch: {
+    readonly rate: number;
+    readonly stress: number;
+    readonly x: number;
+    readonly y: number;
+  };
 }
 
 /** Gauss-Legendre on [0, 1], five points: heights from half depth. */
 const HEIGHTS = [0.046910077030668, 0.230765344947158, 0.5, 0.769234655052842, 0.953089922969332];
-const SHARES = [0.118463442528095, 0.239314335249683, 0.284444444444444, 0.239314335249683, 0.118463442528095];
+const SHARES = [
+  0.118463442528095, 0.239314335249683, 0.284444444444444, 0.239314335249683, 0.118463442528095,
+];
 /** Small meshes are looked at in the middles of the three sides of each triangle, large ones in its middle. */
 const SIDES_A = [0.5, 0, 0.5];
 const SIDES_B = [0.5, 0.5, 0];

@@ -48,10 +48,7 @@ export function huggingTraces(field: FlowField, face: number, radius: number): T
 }
 
 /** A face as a line on the plan, moved in a hair. */
-function faceLine(
-  mesh: Mesh,
-  tag: number,
-): { readonly length: number; at(along: number): [number, number] } {
+function faceLine(mesh: Mesh, tag: number): { readonly length: number; at(along: number): [number, number] } {
   const from: number[] = [];
   const chords: [ax: number, ay: number, bx: number, by: number][] = [];
   let length = 0;
@@ -168,9 +165,7 @@ function triangleSizes(mesh: Mesh): Float64Array {
     const [a, b, c] = mesh.triangles.subarray(6 * t, 6 * t + 3);
     const abx = mesh.x[b] - mesh.x[a];
     const aby = mesh.y[b] - mesh.y[a];
-    return Math.sqrt(
-      Math.abs(abx * (mesh.y[c] - mesh.y[a]) - (mesh.x[c] - mesh.x[a]) * aby) / 2,
-    );
+    return Math.sqrt(Math.abs(abx * (mesh.y[c] - mesh.y[a]) - (mesh.x[c] - mesh.x[a]) * aby) / 2);
   });
 }
 

@@ -1,7 +1,7 @@
 import type { Profile } from '../section/profile.ts';
 import { elementsExposure } from './section-elements.ts';
 import { ellipseExposure } from './section-ellipse.ts';
-import type { SectionExposure } from './section-exposure.ts';
+import type { HuggingPlace, SectionExposure } from './section-exposure.ts';
 import { rectangleExposure } from './section-rectangle.ts';
 
 /** Sections by profile and size; cleared when it holds more than a chip being edited can need. */
@@ -19,10 +19,35 @@ export function sectionExposure(
   let found = known.get(key);
   if (!found) {
     if (known.size >= MOST) known.clear();
-    found = make(profile, width, depth, where);
+    found = remembering(make(profile, width, depth, where));
     known.set(key, found);
   }
   return found;
+}
+
+/** Asked again for the same ball or the same dose, the same answer without working it out. */
+function remembering(section: SectionExposure): SectionExposure {
+  const places = new Map<number, HuggingPlace | null>();
+  const powers = new Map<number, number>();
+  return {
+    ...section,
+    shearPower(exponent) {
+      let power = powers.get(exponent);
+      if (power === undefined) {
+        power = section.shearPower(exponent);
+        powers.set(exponent, power);
+      }
+      return power;
+    },
+    hugging(diameter) {
+      let place = places.get(diameter);
+      if (place === undefined) {
+        place = section.hugging(diameter);
+        places.set(diameter, place);
+      }
+      return place;
+    },
+  };
 }
 
 function make(profile: Profile, width: number, depth: number, where: string): SectionExposure {

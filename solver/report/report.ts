@@ -12,7 +12,9 @@ import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
 import { cellResults, inertiaFindings } from './cells.ts';
 import { stretchEvidence } from './evidence.ts';
+import { exposureOf } from './exposure.ts';
 import { faultFindings } from './faults.ts';
+import { chipNet } from './flow-net.ts';
 import { joinedEdges, joinedFlows } from './joined.ts';
 import { limitResults } from './limits.ts';
 import { lawPieceResult, pieceResult } from './pieces.ts';
@@ -42,7 +44,8 @@ export function report(
   const { cells, findings: cellFindings } = cellResults(chip, lumped, flow);
   const between = (start: string, goal: string): Set<string> =>
     piecesBetween(chip, lumped, flow, start, goal);
-  const limits = limitResults(chip, channels, cells, between);
+  const exposure = exposureOf(chip, chipNet(chip, graph, fluid, lumped, flow, pieces, cells));
+  const limits = limitResults({ chip, graph, lumped, flow, channels, cells, exposure, between });
   const stretches = stretchEvidence(lumped, flow, pieces);
   const checks = checkFindings({ chip, graph, fluid, stretches, ports, cells });
   return {
@@ -55,7 +58,7 @@ export function report(
     ports,
     channels,
     cells,
-    routes: [],
+    routes: exposure.results,
     targets: targetResults(chip, ports, channels, total),
     limits: limits.results,
     balance: {
@@ -70,6 +73,7 @@ export function report(
         ...faultFindings(graph, flow),
         ...unresolvedFindings(lumped, flows),
         ...limits.findings,
+        ...exposure.findings,
         ...cellFindings,
         ...inertiaFindings(lumped, chip, flow, pieces, fluid.density),
         ...lumped.findings,
