@@ -5,6 +5,7 @@ import type { Whole } from '../tools/tool.ts';
 import { FluidFields } from './fluid-fields.tsx';
 import { LayerFields } from './layer-fields.tsx';
 import { LimitFields } from './limit-fields.tsx';
+import { ProcessFields } from './process-fields.tsx';
 
 /** The chip as a whole: size, layers, fluid, limits. */
 export function ChipPanel() {
@@ -37,6 +38,7 @@ export function ChipPanel() {
       <LayerFields />
       <FluidFields fluid={chip.fluid} onFluid={(fluid) => set('change the fluid', { fluid })} />
       <LimitFields />
+      <ProcessFields process={chip.process} onProcess={(process) => set('change the process', { process })} />
       <NoteField note={chip.note} onNote={(note) => set('change the note', { note })} />
     </>
   );

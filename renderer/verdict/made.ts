@@ -1,3 +1,4 @@
+import { PROCESSES } from '../../solver/checks/process.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { counted, lengthFigure } from '../words/figure.ts';
 import { type Answer, type Evidence, placeRef, strong } from './answer.ts';
@@ -15,7 +16,7 @@ export function narrowest(chip: Chip): { readonly width: number; readonly id: st
   return best;
 }
 
-/** What the checks of buildability found; without any, the narrowest feature and that no process is given. */
+/** What the checks of buildability found and nobody accepted; without any, the narrowest channel and the process. */
 export function madeAnswer({ chip, result }: Evidence): Answer {
   const least = narrowest(chip);
   if (!least)
@@ -27,7 +28,9 @@ export function madeAnswer({ chip, result }: Evidence): Answer {
       culprit: null,
     };
   const found = (result?.findings ?? []).filter((finding) => BUILD_KINDS.has(finding.kind));
-  const stops = found.filter((finding) => finding.severity !== 'note');
+  const open = found.filter(({ severity, accepted }) => severity !== 'note' && accepted === undefined);
+  const taken = found.filter(({ severity, accepted }) => severity !== 'note' && accepted !== undefined);
+  const stops = [...open].sort((a, b) => Number(b.severity === 'stop') - Number(a.severity === 'stop'));
   const [first] = stops;
   if (first)
     return {
@@ -41,13 +44,25 @@ export function madeAnswer({ chip, result }: Evidence): Answer {
       margin: null,
       culprit: placeRef(first.where, chip),
     };
+  if (chip.process && result)
+    return {
+      question: QUESTION,
+      standing: 'yes',
+      says: [
+        `Yes, by ${PROCESSES[chip.process.kind].name}: the narrowest channel is `,
+        strong(lengthFigure(least.width, { digits: 3 })),
+        `, ${least.id}${taken.length > 0 ? `; ${counted(taken.length, 'finding')} accepted` : ''}.`,
+      ],
+      margin: null,
+      culprit: `channel:${least.id}`,
+    };
   return {
     question: QUESTION,
     standing: 'not asked',
     says: [
       'The narrowest channel is ',
       strong(lengthFigure(least.width, { digits: 3 })),
-      `, ${least.id}; what the process holds is not given.`,
+      `, ${least.id}; no process is given.`,
     ],
     margin: null,
     culprit: `channel:${least.id}`,

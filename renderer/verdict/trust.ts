@@ -31,7 +31,7 @@ export function trustAnswer(evidence: Evidence): Answer {
   const error = statedError(result);
   const reynolds = highestReynolds(result);
   const doubts = result.findings.filter(
-    (finding) => finding.severity !== 'note' && !BUILD_KINDS.has(finding.kind),
+    ({ kind, severity, accepted }) => severity !== 'note' && accepted === undefined && !BUILD_KINDS.has(kind),
   );
   const flow: string = reynolds
     ? `Re at most ${number(reynolds.value, reynolds.value < 0.1 ? 1 : 2)}.`

@@ -169,7 +169,36 @@ describe('Can it be made?', () => {
   test('without a process the narrowest feature is named, and it is no yes', () => {
     const answer = ask('made', teeChip(), resultOf());
     expect(answer).toMatchObject({ standing: 'not asked', culprit: 'channel:up' });
-    expect(text(answer)).toBe('The narrowest channel is 120 µm, up; what the process holds is not given.');
+    expect(text(answer)).toBe('The narrowest channel is 120 µm, up; no process is given.');
+  });
+  test('by a process; a stop is a no until it is accepted, and stands before a doubt', () => {
+    const chip: Chip = { ...teeChip(), process: { kind: 'film-mask' } };
+    expect(ask('made', chip, resultOf())).toMatchObject({ standing: 'yes' });
+    expect(text(ask('made', chip, resultOf()))).toBe(
+      'Yes, by soft moulding from a film mask: the narrowest channel is 120 µm, up.',
+    );
+    const doubt = {
+      kind: 'edge',
+      severity: 'warn',
+      where: 'up',
+      says: 'up is near.',
+      do: 'Move it.',
+    } as const;
+    const stop = {
+      kind: 'least-width',
+      severity: 'stop',
+      where: 'up',
+      says: 'up is thin.',
+      do: 'Widen.',
+    } as const;
+    const no = ask('made', chip, resultOf({ findings: [doubt, stop] }));
+    expect(no).toMatchObject({ standing: 'no', culprit: 'channel:up' });
+    expect(text(no)).toBe('No: up is thin, and one more finding.');
+    const held = { ...stop, accepted: 'made before' };
+    expect(ask('made', chip, resultOf({ findings: [held, doubt] })).standing).toBe('unknown');
+    const yes = ask('made', chip, resultOf({ findings: [held] }));
+    expect(yes.standing).toBe('yes');
+    expect(text(yes)).toContain('one finding accepted.');
   });
   test('nothing drawn', () => expect(text(ask('made', emptyChip(), null))).toBe('Nothing is drawn yet.'));
 });

@@ -28,8 +28,9 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
   for (const stretch of evidence.stretches) {
     const piece = graph.pieces[stretch.piece]!;
     const layer = chip.layers[piece.layerIndex]!;
-    const { x, y } = piece.path[piece.path.length >> 1]!;
-    const base = { where: stretch.name, at: placeOf(x, y) };
+    const half = piece.path.length >> 1;
+    const [p, q] = [piece.path[half - 1]!, piece.path[half]!];
+    const base = { where: stretch.name, at: placeOf((p.x + q.x) / 2, (p.y + q.y) / 2) };
     const add = (finding: Omit<Found, 'where' | 'at'>): void => found.add({ ...finding, ...base });
     const reynolds = stretch.result.reynolds ?? 0;
     if (reynolds > TURBULENT) {
