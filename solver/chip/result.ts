@@ -64,7 +64,7 @@ export interface CellResult {
   readonly at: readonly [number, number];
   /** Names of the pieces (or "port:in") at its faces, in the order of the port matrix. */
   readonly faces: readonly string[];
-  /** m^3/s/Pa: flow out of face i per unit pressure on face j. */
+  /** m^3/s/Pa: flow from the channel at face i into the cell, per unit pressure on face j. */
   readonly portMatrix: readonly (readonly number[])[];
   readonly peakWallShear: number | null;
   readonly peakAt: readonly [number, number] | null;

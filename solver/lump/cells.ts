@@ -97,8 +97,20 @@ function solutionOf(
   return found;
 }
 
-/** Local coordinates to a hundredth of a nanometre: what an edit elsewhere leaves alone reads the same. */
+const texts = new WeakMap<CellShape, string>();
+
+/** A shape that an edit left alone is the same object, and its text is made once. */
 function textOf(shape: CellShape): string {
+  let text = texts.get(shape);
+  if (text === undefined) {
+    text = madeText(shape);
+    texts.set(shape, text);
+  }
+  return text;
+}
+
+/** Local coordinates to a hundredth of a nanometre: what an edit elsewhere leaves alone reads the same. */
+function madeText(shape: CellShape): string {
   const unit = NANOMETRES * 100;
   let text = `${Math.round(shape.depth * unit)} ${JSON.stringify(shape.profile)}`;
   for (const loop of shape.loops) {

@@ -3,7 +3,8 @@ import { TOUCH } from '../../chip/geometry/tolerance.ts';
 import type { Graph } from '../../chip/graph.ts';
 import { type Drawing, drawingOf } from '../../chip/read-graph-drawing.ts';
 import type { Finding } from '../../problem/finding.ts';
-import { assemble, type Mouth, type Part } from './assemble.ts';
+import type { Mouth, Part } from './assemble.ts';
+import { assembleOnce } from './assembled.ts';
 import { LARGEST, MERGE } from './bounds.ts';
 import { type Clusters, cluster } from './clusters.ts';
 import { findCores } from './cores.ts';
@@ -74,7 +75,7 @@ function partsOf(
     return `it is about ${Math.round(size)} channel widths in size, above ${largest}; draw its parts further apart`;
   }
   return (
-    assemble(drawing, graph, draft.ground, draft.origin) ??
+    assembleOnce(drawing, graph, draft.ground, draft.origin) ??
     'another channel comes too close to one of its arms'
   );
 }
