@@ -52,7 +52,12 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       shown: coloured,
       bodies: new Bodies(scene, shadesOf(scene, coloured)),
       ports: portWords(chip, solved.result),
-      places: placeWords(chip, solved.result, (where) => placeOf(chip, where)),
+      places: placeWords(chip, solved.result, (where) => {
+        // a junction is marked where it is worst
+        const peak = solved.result?.cells.find((cell) => cell.id === where)?.peakAt;
+        if (peak) return [peak[0] * 1e9, peak[1] * 1e9];
+        return solved.graph?.sites.find((site) => site.name === where)?.at ?? placeOf(chip, where);
+      }),
     };
     return derived;
   };

@@ -10,12 +10,17 @@ import { PointerNote } from './pointer-note.tsx';
 /** px kept free round the chip when it is fitted: its figures, the words beside its ports, the legend. */
 export const INSET = { left: 56, right: 56, top: 40, bottom: 76 } as const;
 
+/** The camera as it was last fitted: while it is that one, the chip stays fitted to the sheet. */
+let fittedCamera: unknown = null;
+
 export function fitChip(desk: ReturnType<typeof usePage>['desk']): void {
   const chip = desk.chip();
   const { size } = desk.view.get();
   if (!chip || size.width === 0) return;
   const { width, height } = chip.outline;
-  desk.view.patch({ camera: fitted({ left: 0, bottom: 0, right: width, top: height }, size, INSET) });
+  const camera = fitted({ left: 0, bottom: 0, right: width, top: height }, size, INSET);
+  fittedCamera = camera;
+  desk.view.patch({ camera });
 }
 
 /** The chip, where it is drawn and edited. The same is operable as tables in the ledger. */
@@ -33,7 +38,7 @@ export function Sheet() {
       const view = desk.view.get();
       if (width === 0 || (view.size.width === width && view.size.height === height)) return;
       desk.view.patch({ size: { width, height } });
-      if (!view.camera) fitChip(desk);
+      if (!view.camera || view.camera === fittedCamera) fitChip(desk);
     };
     measure();
     const stop = createPicture(element, desk, bench);

@@ -1,0 +1,107 @@
+import { mkdirSync } from 'node:fs';
+import { join, resolve } from 'node:path';
+import type { Page } from 'playwright-core';
+import { answered, sit } from '../page/desk.ts';
+
+/** Pictures of every screen and state, into the ignored folder `screens/`: `npm run screens [part of a name]`. */
+const FOLDER = resolve(import.meta.dirname, '../../screens');
+const wanted = process.argv.slice(2);
+mkdirSync(FOLDER, { recursive: true });
+
+const sheet = (page: Page) => page.locator('.sheet-surface').first();
+const demo = async (page: Page, name: RegExp): Promise<void> => {
+  await page.getByRole('button', { name }).click();
+  await page.locator('.frame').waitFor();
+};
+const empty = async (page: Page): Promise<void> => {
+  await page.getByRole('button', { name: 'Begin', exact: true }).click();
+  await page.locator('.frame').waitFor();
+};
+const press = async (page: Page, key: string): Promise<void> => {
+  await sheet(page).focus();
+  await page.keyboard.press(key);
+};
+
+/** What is done before the picture is taken, from the start. */
+const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
+  start: async (page) => {
+    await page.getByRole('button', { name: /Eight-way/ }).waitFor();
+  },
+  empty,
+  small: async (page) => {
+    await demo(page, /Cell loading/);
+    await answered(page);
+    await page.locator('.verdict-says').nth(1).click();
+  },
+  busy: async (page) => {
+    await demo(page, /Gradient tree/);
+    await page
+      .locator('.verdicts[aria-busy="true"]')
+      .waitFor({ timeout: 5000 })
+      .catch(() => undefined);
+  },
+  dense: async (page) => {
+    await empty(page);
+    await press(page, 't');
+    const box = (await page.locator('.sheet').boundingBox())!;
+    await page.mouse.click(box.x + box.width * 0.12, box.y + box.height * 0.18);
+    await page.mouse.click(box.x + box.width * 0.86, box.y + box.height * 0.8);
+    await page.getByLabel('Outlets').selectOption('7');
+    await page.locator('.verdict-says').first().waitFor();
+    await page.waitForTimeout(4000);
+  },
+  error: async (page) => {
+    await demo(page, /Eight-way/);
+    await page.getByRole('tab', { name: /Ports/ }).click();
+    await page.getByText('in', { exact: true }).last().click();
+    await page.getByLabel('Flow into the chip').fill('3 bananas');
+    await page.getByLabel('Flow into the chip').press('Enter');
+  },
+  drawing: async (page) => {
+    await demo(page, /Eight-way/);
+    await press(page, 'c');
+    const box = (await page.locator('.sheet').boundingBox())!;
+    await page.mouse.click(box.x + 300, box.y + 120);
+    await page.mouse.move(box.x + 420, box.y + 180);
+    await page.keyboard.type('4 mm');
+  },
+  finder: async (page) => {
+    await demo(page, /Eight-way/);
+    await press(page, '/');
+    await page.keyboard.type('ali');
+  },
+  chip: async (page) => {
+    await demo(page, /Cell loading/);
+    await press(page, 'i');
+  },
+  plots: async (page) => {
+    await demo(page, /Cell loading/);
+    await answered(page);
+    await press(page, 'u');
+    await page.locator('.main-svg').first().waitFor({ timeout: 60_000 });
+  },
+};
+
+const LOOKS = [
+  { name: 'light-1440', width: 1440, height: 900, scheme: 'light' },
+  { name: 'dark-1440', width: 1440, height: 900, scheme: 'dark' },
+  { name: 'light-1280', width: 1280, height: 720, scheme: 'light' },
+  { name: 'dark-1280', width: 1280, height: 720, scheme: 'dark' },
+] as const;
+
+for (const [state, go] of Object.entries(STATES)) {
+  if (wanted.length > 0 && !wanted.some((part) => state.includes(part))) continue;
+  const sitting = await sit();
+  try {
+    await go(sitting.page);
+    for (const look of LOOKS) {
+      await sitting.page.setViewportSize(look);
+      await sitting.page.emulateMedia({ colorScheme: look.scheme });
+      await sitting.page.waitForTimeout(400);
+      await sitting.page.screenshot({ path: join(FOLDER, `${state}-${look.name}.png`) });
+    }
+    console.log(`${state}: four pictures`);
+  } finally {
+    await sitting.end();
+  }
+}
