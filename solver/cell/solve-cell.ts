@@ -2,6 +2,7 @@ import { canonical } from './canonical.ts';
 import { type Accuracy, type CellSolution, DEFAULT_ACCURACY, type ShapeSolution } from './cell.ts';
 import { checkCell } from './check-cell.ts';
 import { equivalent } from './equivalent.ts';
+import { rimError } from './rim.ts';
 import type { CellShape } from './shape.ts';
 import { solveShape } from './solve-shape.ts';
 import { type CellStore, serves } from './store.ts';
@@ -42,7 +43,7 @@ export function solveCell(
     faces,
     key,
     portMatrix,
-    flowError: solved.flowError + profileError,
+    flowError: solved.flowError + profileError + rimError(shape, portMatrix),
     // The rectangle that stands in has other side walls: its peaks say nothing.
     peakError: profileError > 0 ? null : solved.peakError,
     profileError,

@@ -145,6 +145,14 @@ test('the rim of a hole in the roof is a face like another', () => {
   expect(portMatrix[1]!).toBeLessThan(0);
   expect(checks.conservation).toBeLessThan(1e-7);
 });
+test('a small hole widens the error bound by what the turn into it may cost', () => {
+  const bound = (radius: number): number => {
+    const hole = [edge(1.3 - radius, 0.5, 2, -1), edge(1.3 + radius, 0.5, 2, -1)];
+    return solveCell(box([[edge(0, 0), edge(3, 0, 1), edge(3, 1), edge(0, 1)], hole], 2, 0.2), ROUGH)
+      .flowError;
+  };
+  expect(bound(0.05)).toBeGreaterThan(bound(0.3) + 0.05);
+});
 test('a bend of another profile says how far the rectangle in its place may be off', () => {
   const trapezoid = solveCell({ ...bend(0.2), profile: { kind: 'trapezoid', wallAngle: 75 } }, ROUGH);
   expect(trapezoid.profileError).toBeGreaterThan(0);
