@@ -2,6 +2,7 @@ import type { Chip, Limit, Target } from '../../solver/chip/chip.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import { formatNumber, formatQuantity } from '../../solver/chip/units-format.ts';
 import type { Finding } from '../../solver/problem/finding.ts';
+import { damageText, pumpsText, routesText } from './exposure-text.ts';
 import { NONE, tableLines } from './table.ts';
 import { wrapped } from './width.ts';
 
@@ -77,22 +78,6 @@ function channels(result: Result): string[] {
       { head: 'mean velocity', kind: 'velocity', values: shown.map(({ meanVelocity }) => meanVelocity) },
       { head: 'peak wall shear', kind: 'stress', values: shown.map(({ peakWallShear }) => peakWallShear) },
       { head: 'residence time', kind: 'time', values: shown.map(({ residenceTime }) => residenceTime) },
-    ]),
-    ...more,
-  ];
-}
-
-function routes({ routes: all }: Result): string[] {
-  if (all.length === 0) return [];
-  const { shown, more } = cut(all, 'routes');
-  return [
-    'Routes',
-    ...tableLines([
-      { head: 'from', words: shown.map(({ from }) => from) },
-      { head: 'to', words: shown.map(({ to }) => to) },
-      { head: 'share', kind: 'share', values: shown.map(({ share }) => share) },
-      { head: 'residence time', kind: 'time', values: shown.map(({ residenceTime }) => residenceTime) },
-      { head: 'peak wall shear', kind: 'stress', values: shown.map(({ peakWallShear }) => peakWallShear) },
     ]),
     ...more,
   ];
@@ -215,7 +200,9 @@ export function reportText(chip: Chip, result: Result, width = 100): string {
     [...wrapped(fluidLine(chip, result), width), ...wrapped(JUNCTIONS[result.junctions], width)],
     ports(result),
     channels(result),
-    routes(result),
+    routesText(result),
+    damageText(result),
+    pumpsText(result),
     targets(chip, result),
     limits(chip, result),
     findings(result, width),

@@ -14,12 +14,33 @@ export interface Result {
   readonly routes: readonly RouteResult[];
   readonly targets: readonly TargetResult[];
   readonly limits: readonly LimitResult[];
+  /** Of every port that is driven. */
+  readonly pumps?: readonly PumpResult[];
+  /** Where reservoirs empty over the assay. */
+  readonly drift?: DriftResult;
   readonly balance: {
     readonly conservationResidual: number;
     readonly powerIn: number;
     readonly dissipation: number;
   };
+  /** How far the numbers may be off, as far as the solver knows; absent where it cannot be said. */
+  readonly bands?: Bands;
   readonly findings: readonly Finding[];
+}
+
+/**
+ * Relative errors, the worst of the chip: to first order, every resistance and junction off by its own
+ * error in the direction that harms most. Tolerances of making are not in it.
+ */
+export interface Bands {
+  /** Of the share of the flow that a port takes. */
+  readonly share: number;
+  /** Of the flow at a port. */
+  readonly flow: number;
+  /** Of peak wall shear. */
+  readonly shear: number;
+  /** Of the pressure that drives a given flow. */
+  readonly pressure: number;
 }
 
 export interface PortResult {
@@ -30,6 +51,8 @@ export interface PortResult {
   readonly flow: number | null;
   /** Of the total that enters the chip. */
   readonly share: number | null;
+  /** Relative errors of flow and share, as `Bands`. */
+  readonly band?: { readonly flow: number; readonly share: number };
 }
 
 export interface ChannelResult {
@@ -122,6 +145,37 @@ export interface StretchResult {
   /** µ √(2 e:e), Pa */
   readonly stress: number;
   readonly at: readonly [number, number];
+}
+
+/** What a driven port asks of what stands behind it. */
+export interface PumpResult {
+  readonly port: string;
+  /** Pa at the far end of the tubing, and m^3/s into the chip. */
+  readonly pressure: number;
+  readonly flow: number;
+  /** What the pump can do, as the chip states it. */
+  readonly ratedPressure?: number;
+  readonly ratedFlow?: number;
+  /** Of a syringe, m/s. */
+  readonly plungerSpeed?: number;
+  /** s until what it holds is gone (or full); null where that is not stated or nothing flows. */
+  readonly runTime: number | null;
+  /** null where nothing is stated that it could be judged by. */
+  readonly met: boolean | null;
+}
+
+/** The end of the assay, when reservoirs have emptied and filled. */
+export interface DriftResult {
+  readonly time: number;
+  /** Heads at start and end, m. */
+  readonly levels: readonly { readonly port: string; readonly from: number; readonly to: number }[];
+  /** Flow and share at the end, and by how much the share changed. */
+  readonly ports: readonly {
+    readonly port: string;
+    readonly flow: number;
+    readonly share: number | null;
+    readonly drift: number | null;
+  }[];
 }
 
 export interface TargetResult {

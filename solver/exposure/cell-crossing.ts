@@ -95,6 +95,11 @@ export class CellPaths {
     return new CellPaths(cell, through, patternOf(solution, solution.fields, pattern));
   }
 
+  /** Pa s */
+  get viscosity(): number {
+    return this.#cell.viscosity;
+  }
+
   /** m³ */
   get volume(): number {
     return this.#known.scan.volume * this.#placement.scale ** 3;
