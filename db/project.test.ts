@@ -12,6 +12,7 @@ import { makeFile } from './make.ts';
 import { openForReading, openForWork } from './open.ts';
 import type { Project } from './project.ts';
 import { readProjectChip } from './read.ts';
+import { seam } from './seam.ts';
 
 /** A project of `channels` channels in a folder of its own. */
 async function withProject<T>(
@@ -104,6 +105,30 @@ test('an edit that does not fit changes nothing and says why', async () => {
     expect(() => project.edit(good, 7)).toThrow('The chip has changed since this edit was begun.');
     expect(project.position).toEqual(before);
     expect(await readProjectChip(path)).toEqual(madeUpChip(5));
+  });
+});
+
+test('a step that is in the file although it was reported as failed is taken in before the next', async () => {
+  await withProject(5, async (project, path, folder) => {
+    const edit = randomEdit(project.chip, random(1));
+    seam.watch = (_name, when) => {
+      if (when === 'after') throw Object.assign(new Error('made to fail'), { code: 'SQLITE_IOERR' });
+    };
+    try {
+      expect(() => project.edit(edit, 1)).toThrow('The disk reported a fault');
+    } finally {
+      seam.watch = null;
+    }
+    const next = randomEdit(madeUpChip(5), random(2));
+    expect(() => project.edit(next, 1)).toThrow('has changed since');
+    expect(project.chip).toEqual(applyEdit(madeUpChip(5), edit));
+    project.undo();
+    project.edit(next, 3);
+    expect(project.position.seq).toBe(4);
+    project.close();
+    const { project: again } = await openForWork(path, folder);
+    expect(again.chip).toEqual(applyEdit(madeUpChip(5), next));
+    again.close();
   });
 });
 

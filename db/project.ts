@@ -5,10 +5,20 @@ import type { Result } from '../solver/chip/result.ts';
 import { readChip } from '../solver/chip/schema-chip.ts';
 import { Problem } from '../solver/problem/problem.ts';
 import type { Content } from './check/content.ts';
+import { Damage } from './check/damage.ts';
 import { editBetween } from './chip/between.ts';
 import { chipHash } from './chip/parts.ts';
 import { type Folded, fold } from './journal/fold.ts';
-import { append, changesOf, NO_BODY, packChanges, readStep, type Step } from './journal/journal.ts';
+import {
+  append,
+  Chain,
+  changesOf,
+  NO_BODY,
+  packChanges,
+  readStep,
+  type Step,
+  stepOf,
+} from './journal/journal.ts';
 import type { Mark, Stacks } from './journal/stacks.ts';
 import { type CellEntry, Cells } from './kept/cells.ts';
 import { findResult, keepResult } from './kept/results.ts';
@@ -43,6 +53,8 @@ export class Project {
   #hash: Uint8Array;
   #folded: Folded;
   readonly #openedAt: Chip;
+  /** The last step was reported as failed: whether it is in the file is to be looked up before the next. */
+  #unsure = false;
 
   constructor(store: Store, path: string, content: Content, readOnly: boolean) {
     this.path = path;
@@ -76,14 +88,14 @@ export class Project {
 
   /** Makes one edit, made at position `seq`. */
   edit(edit: ChipEdit, seq: number): Position {
-    if (seq !== this.#seq)
-      throw new Problem(
-        'project',
-        'The chip has changed since this edit was begun.',
-        edit.label,
-        'Do it again on the chip as it stands.',
-      );
     return this.#do(() => {
+      if (seq !== this.#seq)
+        throw new Problem(
+          'project',
+          'The chip has changed since this edit was begun.',
+          edit.label,
+          'Do it again on the chip as it stands.',
+        );
       const checked = readEdit(edit);
       const { chip, inverse } = makeEdit(this.#chip, checked);
       const body = packChanges({ forward: checked.changes, backward: inverse.changes });
@@ -94,11 +106,11 @@ export class Project {
   }
 
   undo(): Moved {
-    return this.#move('undo', this.#stacks.done.at(-1));
+    return this.#move('undo');
   }
 
   redo(): Moved {
-    return this.#move('redo', this.#stacks.undone.at(-1));
+    return this.#move('redo');
   }
 
   /** The last things done, newest first; what is undone comes before what is done. */
@@ -199,9 +211,10 @@ export class Project {
     }
   }
 
-  #move(kind: 'undo' | 'redo', mark: Mark | undefined): Moved {
-    if (!mark) throw new Problem('project', `There is nothing to ${kind}.`, '', 'Go on editing.');
+  #move(kind: 'undo' | 'redo'): Moved {
     return this.#do(() => {
+      const mark = (kind === 'undo' ? this.#stacks.done : this.#stacks.undone).at(-1);
+      if (!mark) throw new Problem('project', `There is nothing to ${kind}.`, '', 'Go on editing.');
       const { forward, backward } = changesOf(readStep(this.#store, mark.seq));
       const edit = readEdit({ label: mark.label, changes: kind === 'undo' ? backward : forward });
       const chip = applyEdit(this.#chip, edit);
@@ -213,10 +226,28 @@ export class Project {
 
   #append(step: Omit<Step, 'seq' | 'made' | 'hash'>): void {
     const next = { ...step, seq: this.#seq + 1, made: Date.now() };
+    this.#unsure = true;
     const written = append(this.#store, this.#hash, next);
+    this.#unsure = false;
     this.#seq = written.seq;
     this.#hash = written.hash;
     this.#stacks.take(written);
+  }
+
+  /** Takes in a step that was reported as failed although it is in the file. */
+  #catchUp(): void {
+    const chain = new Chain({ seq: this.#seq, hash: this.#hash });
+    for (const row of this.#store.all('SELECT * FROM journal WHERE seq > ? ORDER BY seq', this.#seq)) {
+      const step = stepOf(row);
+      if (!step || !chain.takes(step)) throw new Damage(['the record of edits was altered']);
+      const { forward, backward } = changesOf(step.of === null ? step : readStep(this.#store, step.of));
+      const changes = step.kind === 'undo' ? backward : forward;
+      this.#chip = applyEdit(this.#chip, readEdit({ label: step.label, changes }));
+      this.#stacks.take(step);
+      this.#seq = step.seq;
+      this.#hash = step.hash;
+    }
+    this.#unsure = false;
   }
 
   /** Runs `work`; a failure is told in a person's words. */
@@ -229,6 +260,7 @@ export class Project {
         'Save it under another name to work on it.',
       );
     try {
+      if (writes && this.#unsure) this.#catchUp();
       return work();
     } catch (error) {
       throw projectProblem(error, this.path);
