@@ -63,6 +63,8 @@ const WIDTH = 76_000_000;
 const HEIGHT = 26_000_000;
 const EDITS = 200;
 const MANY = 30;
+/** Parts that one change may make: long serpentines and rows of posts are for the tests of the makers. */
+const MOST = 60;
 // junctions solved in space are held against fresh ones where they are made; here it is the edits that count
 const IDEAL = { junctions: 'ideal' } as const;
 
@@ -108,6 +110,8 @@ class Player {
   }
 
   make(alteration: Exclude<Shaping, string>): boolean {
+    if ((alteration.put?.length ?? 0) > MOST) return false;
+    if (alteration.put?.some((part) => part.kind === 'channel' && part.value.path.length > 24)) return false;
     try {
       const edit = toEdit(this.document.chip, alteration);
       if (edit.changes.length === 0) return false;
