@@ -10,7 +10,9 @@ import type { Lumped } from '../lump/lump.ts';
 import { NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
+import { withStrain } from './cell-strain.ts';
 import { cellResults, inertiaFindings } from './cells.ts';
+import { driftOf } from './drift.ts';
 import { stretchEvidence } from './evidence.ts';
 import { exposureOf } from './exposure.ts';
 import { faultFindings } from './faults.ts';
@@ -18,6 +20,7 @@ import { chipNet } from './flow-net.ts';
 import { joinedEdges, joinedFlows } from './joined.ts';
 import { limitResults } from './limits.ts';
 import { lawPieceResult, pieceResult } from './pieces.ts';
+import { pumpResults } from './pumps.ts';
 import { stillDucts } from './still.ts';
 import { targetResults } from './targets.ts';
 
@@ -44,7 +47,10 @@ export function report(
   const { cells, findings: cellFindings } = cellResults(chip, lumped, flow);
   const between = (start: string, goal: string): Set<string> =>
     piecesBetween(chip, lumped, flow, start, goal);
-  const exposure = exposureOf(chip, chipNet(chip, graph, fluid, lumped, flow, pieces, cells));
+  const net = chipNet(chip, graph, fluid, lumped, flow, pieces, cells);
+  const exposure = exposureOf(chip, net);
+  const pumps = pumpResults(chip, lumped, flow);
+  const drift = driftOf(chip, lumped, flow, fluid.density);
   const limits = limitResults({ chip, graph, lumped, flow, channels, cells, exposure, between });
   const stretches = stretchEvidence(lumped, flow, pieces);
   const checks = checkFindings({ chip, graph, fluid, stretches, ports, cells });
@@ -57,10 +63,12 @@ export function report(
     fluid: { viscosity: fluid.viscosity, density: fluid.density },
     ports,
     channels,
-    cells,
+    cells: chip.limits.length > 0 ? withStrain(cells, net, lumped, flow) : cells,
     routes: exposure.results,
     targets: targetResults(chip, ports, channels, total),
     limits: limits.results,
+    pumps: pumps.pumps,
+    ...(drift ? { drift: drift.drift } : {}),
     balance: {
       conservationResidual: flow.conservationResidual,
       powerIn: flow.powerIn,
@@ -74,6 +82,8 @@ export function report(
         ...unresolvedFindings(lumped, flows),
         ...limits.findings,
         ...exposure.findings,
+        ...pumps.findings,
+        ...(drift?.findings ?? []),
         ...cellFindings,
         ...inertiaFindings(lumped, chip, flow, pieces, fluid.density),
         ...lumped.findings,

@@ -130,6 +130,7 @@ describe('files', () => {
       'routes',
       'targets',
       'limits',
+      'pumps',
       'balance',
       'findings',
     ]);
