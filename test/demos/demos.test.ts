@@ -136,7 +136,7 @@ describe('cell loading', () => {
     near(result.limits[0]!.worst, 1.67965, 1e-5);
   });
 
-  test('holds once the neck is 120 um wide, as its caption says', async () => {
+  test('holds in the channels once the neck is 120 um wide', async () => {
     const chip = read('cell-loading');
     const wider = (id: string, width: readonly [number, number]) =>
       ({

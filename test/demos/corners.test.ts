@@ -1,0 +1,51 @@
+import { readFileSync } from 'node:fs';
+import { join } from 'node:path';
+import { expect, test } from 'vitest';
+import type { Chip } from '../../solver/chip/chip.ts';
+import { readDescription } from '../../solver/chip/description.ts';
+import { solve } from '../../solver/solve.ts';
+
+const read = (name: string): Chip =>
+  readDescription(readFileSync(join(import.meta.dirname, '../../assets/demo', `${name}.json`), 'utf8'));
+const COARSE = { accuracy: 0.02 } as const;
+
+test('cell loading: its corners are fatal as drawn; a fillet and a wider neck save the cells, as the caption says', () => {
+  const drawn = read('cell-loading');
+  const first = solve(drawn, COARSE);
+  expect(first.junctions).toBe('solved');
+  expect(first.limits[0]).toMatchObject({ met: false, where: 'junction:1' });
+
+  const wider = {
+    funnel: [200_000, 120_000],
+    neck: [120_000, 120_000],
+    release: [120_000, 200_000],
+  } as const;
+  const saved: Chip = {
+    ...drawn,
+    layers: [{ ...drawn.layers[0], fillet: 50_000 }],
+    channels: drawn.channels.map((channel) =>
+      channel.id in wider ? { ...channel, width: wider[channel.id as keyof typeof wider] } : channel,
+    ),
+  };
+  const last = solve(saved, COARSE);
+  expect(last.limits[0].met).toBe(true);
+  expect(last.targets[0].met).toBe(true);
+  // Neither remedy is enough alone.
+  expect(solve({ ...saved, layers: drawn.layers }, COARSE).limits[0].met).toBe(false);
+  expect(solve({ ...saved, channels: drawn.channels }, COARSE).limits[0].met).toBe(false);
+});
+
+test('the other demos meet what they ask with their junctions solved', () => {
+  for (const name of ['eight-way-splitter', 'attached-cells', 'recirculation-loop', 'gravity-crossing']) {
+    const result = solve(read(name), COARSE);
+    expect(result.junctions, name).toBe('solved');
+    expect(
+      result.targets.every(({ met }) => met),
+      name,
+    ).toBe(true);
+    expect(
+      result.limits.every(({ met }) => met === true),
+      name,
+    ).toBe(true);
+  }
+});
