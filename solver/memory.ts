@@ -8,6 +8,7 @@ import { type CellMemory, cellMemory } from './lump/cells.ts';
 import { lawMemory } from './lump/laws.ts';
 import type { Lumped, LumpMemory } from './lump/lump.ts';
 import { type PreparedNetwork, prepareNetwork } from './network/prepare.ts';
+import { type Gradient, gradients, type Target } from './network/sensitivity.ts';
 import { solveNetwork } from './network/solve-network.ts';
 import { solveNonlinear } from './network/solve-nonlinear.ts';
 import type { NetworkSolution, NetworkSpec } from './network/spec.ts';
@@ -27,6 +28,8 @@ export interface Memory {
    * its pressures as a start where ducts follow laws of their own.
    */
   network(lumped: Lumped): NetworkSolution;
+  /** How flows of the network that was solved last depend on its parts; null where they follow laws or have faults. */
+  gradients(lumped: Lumped, flow: NetworkSolution, targets: readonly Target[]): Gradient[] | null;
 }
 
 /** @param store where solved cells are kept; in memory alone if none is given */
@@ -39,6 +42,10 @@ export function emptyMemory(store?: CellStore): Memory {
   let prepared: { spec: NetworkSpec; network: PreparedNetwork } | null = null;
   let start: Float64Array | undefined;
   return {
+    gradients({ spec, laws }, flow, targets) {
+      if (!prepared || laws || flow.faults.length > 0) return null;
+      return gradients(spec, prepared.network, flow, targets);
+    },
     cells: cellMemory(store),
     lumps: { ducts: new Map(), laws: lawMemory() },
     graph: (chip) => drawing(chip).graph,

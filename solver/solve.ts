@@ -8,6 +8,7 @@ import { cellLayout, idealLayout, type Layout } from './lump/layout.ts';
 import { lump } from './lump/lump.ts';
 import { settleThinning } from './lump/thinning.ts';
 import { emptyMemory, type Memory } from './memory.ts';
+import type { Gradient, Target } from './network/sensitivity.ts';
 import { report } from './report/report.ts';
 
 export interface SolveOptions {
@@ -31,7 +32,8 @@ export function solve(chip: Chip, options: SolveOptions = {}, memory: Memory = e
   const drives = checkDrives(chip, graph, fluid.density);
   const layout = options.junctions === 'ideal' ? idealLayout(graph) : solvedLayout(chip, options, memory);
   const { lumped, flow } = settleThinning(lump(chip, graph, layout, fluid, memory.lumps), memory.network);
-  return report(chip, graph, fluid, lumped, flow, drives);
+  const depends = (targets: readonly Target[]): Gradient[] | null => memory.gradients(lumped, flow, targets);
+  return report(chip, graph, fluid, lumped, flow, drives, depends);
 }
 
 function solvedLayout(chip: Chip, options: SolveOptions, memory: Memory): Layout {

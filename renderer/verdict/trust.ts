@@ -5,7 +5,7 @@ import { BUILD_KINDS } from './finding-kinds.ts';
 
 const QUESTION = 'Can I trust it?';
 
-/** Relative error that the solver states for its worst part. */
+/** Relative error that the solver states for its worst part: what is said where no band is known. */
 export function statedError(result: Result): number {
   let worst = 0;
   // a junction that counts as ideal has no error of its own: that it is ideal is said instead
@@ -28,7 +28,8 @@ export function highestReynolds(result: Result): { readonly value: number; reado
 export function trustAnswer(evidence: Evidence): Answer {
   const { result, chip } = evidence;
   if (!result) return unsolved(QUESTION, evidence);
-  const error = statedError(result);
+  const { bands } = result;
+  const error = bands?.share ?? statedError(result);
   const reynolds = highestReynolds(result);
   const doubts = result.findings.filter(
     ({ kind, severity, accepted }) => severity !== 'note' && accepted === undefined && !BUILD_KINDS.has(kind),
@@ -71,6 +72,7 @@ export function trustAnswer(evidence: Evidence): Answer {
         result.junctions === 'ideal'
           ? 'Roughly: junctions are taken as ideal'
           : 'Nearly: some junctions are still ideal',
+        ...(bands ? [', splits may be off by ', strong(percent(bands.share))] : []),
         solved > 0 ? `, ${counted(solved, 'junction')} solved; ` : '; ',
         flow,
       ],
@@ -81,8 +83,9 @@ export function trustAnswer(evidence: Evidence): Answer {
     question: QUESTION,
     standing: 'yes',
     says: [
-      'Within ',
-      strong(figure(error, 'share', { digits: 2, unit: '%' })),
+      bands ? 'Splits within ' : 'Within ',
+      strong(percent(error)),
+      bands ? `, wall shear within ${percent(bands.shear)}` : '',
       solved > 0 ? `: ${counted(solved, 'junction')} solved, ` : ': ',
       flow,
     ],
@@ -91,9 +94,11 @@ export function trustAnswer(evidence: Evidence): Answer {
   };
 }
 
+const percent = (share: number): string => figure(share, 'share', { digits: 2, unit: '%' });
+
 const band = (error: number) =>
   ({
     kind: 'band',
     half: Math.min(1, Math.max(0.04, error / 0.02)),
-    label: figure(error, 'share', { digits: 2, unit: '%' }),
+    label: percent(error),
   }) as const;

@@ -227,6 +227,15 @@ describe('Can I trust it?', () => {
       'Nearly: some junctions are still ideal, one junction solved; Re at most 1.2.',
     );
   });
+  test('bands are said where they are known', () => {
+    const bands = { share: 0.003, flow: 0.004, shear: 0.052, pressure: 0.01 };
+    expect(text(ask('trust', teeChip(), resultOf({ cells: [cell], bands })))).toBe(
+      'Splits within 0.30 %, wall shear within 5.2 %: one junction solved, Re at most 1.2.',
+    );
+    expect(text(ask('trust', teeChip(), resultOf({ junctions: 'ideal', bands })))).toBe(
+      'Roughly: junctions are taken as ideal, splits may be off by 0.30 %; Re at most 1.2.',
+    );
+  });
   test('junctions on their way are counted', () => {
     const say = (waiting: number) =>
       plainText(

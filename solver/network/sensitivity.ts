@@ -11,6 +11,11 @@ export interface Target {
 export interface Gradient {
   /** m³/s by which the flow changes per relative change of each duct's resistance: ∂q/∂ln R, ducts. */
   readonly byResistance: Float64Array;
+  /**
+   * m³/s per relative error of each block, blocks: the most by which the flow changes where the block's
+   * matrix A is off by no more than its own energy, |x·δA·y| ≤ √(x·A·x) √(y·A·y).
+   */
+  readonly byBlock: Float64Array;
   /** ∂q/∂value of each drive: m³/(s Pa) for a pressure, 1 for a flow. */
   readonly byDrive: Float64Array;
 }
@@ -64,6 +69,15 @@ export function gradients(
     for (let e = 0; e < byResistance.length; e += 1) {
       byResistance[e] = (weight[from[e]] - weight[to[e]]) * solution.ductFlow[e];
     }
+    const byBlock = Float64Array.from(spec.blocks, (_, b) => {
+      let [ours, theirs] = [0, 0];
+      for (let e = edges.blockStart[b]; e < edges.blockStart[b + 1]; e += 1) {
+        const drop = solution.pressure[from[e]] - solution.pressure[to[e]];
+        ours += conductance[e] * (weight[from[e]] - weight[to[e]]) ** 2;
+        theirs += conductance[e] * drop ** 2;
+      }
+      return Math.sqrt(Math.max(0, ours)) * Math.sqrt(Math.max(0, theirs));
+    });
     const supplied = new Float64Array(edges.nodes);
     for (let e = 0; e < from.length; e += 1) {
       const q = conductance[e] * (weight[from[e]] - weight[to[e]]);
@@ -79,6 +93,6 @@ export function gradients(
       kind === 'flow' ? weight[node] : supplied[driveNode[d]],
     );
     if (of === 'drive' && spec.drives[index].kind === 'flow') byDrive[index] = 1;
-    return { byResistance, byDrive };
+    return { byResistance, byBlock, byDrive };
   });
 }

@@ -90,17 +90,14 @@ function merged(findings: readonly Finding[]): Finding[] {
 /** Below this Reynolds number of the channels around a cell, what inertia shifts is not worth reckoning. */
 const CREEPING = 0.05;
 
-/**
- * Inertia, which creeping flow leaves out, where it shifts the flow through a solved cell by more than
- * the cell's own accuracy.
- */
-export function inertiaFindings(
+/** The share by which inertia, which creeping flow leaves out, shifts the flow through each cell. */
+export function inertiaShares(
   lumped: Lumped,
   chip: Chip,
   flow: NetworkSolution,
   pieces: readonly PieceResult[],
   density: number,
-): Finding[] {
+): Float64Array {
   const fastest = new Map<number, number>();
   lumped.stretches.forEach((stretch, index) => {
     const reynolds = pieces[index].reynolds ?? 0;
@@ -108,21 +105,22 @@ export function inertiaFindings(
       fastest.set(node, Math.max(fastest.get(node) ?? 0, reynolds));
     }
   });
+  return Float64Array.from(lumped.cells, ({ spec, solution }) => {
+    const reynolds = Math.max(0, ...spec.faces.map((face) => fastest.get(face.node) ?? 0));
+    if (!solution || reynolds < CREEPING) return 0;
+    const pressures = spec.faces.map((face) => flow.pressure[face.node] || 0);
+    const depth = depthOf(chip, spec.layerIndex);
+    return inertiaShare(solution, pressures, depth, density, lumped.viscosity) ?? 0;
+  });
+}
+
+/** Inertia where it shifts the flow through a solved cell by more than the cell's own accuracy. */
+export function inertiaFindings({ cells }: Lumped, shares: Float64Array): Finding[] {
   let worst: { share: number; cell: PlacedCell } | null = null;
   let count = 0;
-  for (const cell of lumped.cells) {
-    const { spec, solution } = cell;
-    const reynolds = Math.max(0, ...spec.faces.map((face) => fastest.get(face.node) ?? 0));
-    if (!solution || reynolds < CREEPING) continue;
-    const pressures = spec.faces.map((face) => flow.pressure[face.node] || 0);
-    const share = inertiaShare(
-      solution,
-      pressures,
-      depthOf(chip, spec.layerIndex),
-      density,
-      lumped.viscosity,
-    );
-    if (share === null || share <= solution.flowError) continue;
+  for (const [index, cell] of cells.entries()) {
+    const share = shares[index];
+    if (!cell.solution || share <= cell.solution.flowError) continue;
     count += 1;
     if (!worst || share > worst.share) worst = { share, cell };
   }

@@ -8,10 +8,12 @@ import type { Fluid } from '../fluid/fluid.ts';
 import type { DriveCheck } from '../lump/floating.ts';
 import type { Lumped } from '../lump/lump.ts';
 import { NANOMETRES } from '../lump/stretches.ts';
+import type { Gradient, Target } from '../network/sensitivity.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
+import { bandsOf, type ErrorBands } from './bands.ts';
 import { withStrain } from './cell-strain.ts';
-import { cellResults, inertiaFindings } from './cells.ts';
+import { cellResults, inertiaFindings, inertiaShares } from './cells.ts';
 import { driftOf } from './drift.ts';
 import { stretchEvidence } from './evidence.ts';
 import { exposureOf } from './exposure.ts';
@@ -32,6 +34,7 @@ export function report(
   lumped: Lumped,
   flow: NetworkSolution,
   drives: DriveCheck,
+  depends: (targets: readonly Target[]) => Gradient[] | null,
 ): Result {
   const flows = ductFlows(graph, lumped, flow, drives);
   const pieces = lumped.stretches.map((stretch, index) => {
@@ -52,6 +55,8 @@ export function report(
   const pumps = pumpResults(chip, lumped, flow);
   const drift = driftOf(chip, lumped, flow, fluid.density);
   const limits = limitResults({ chip, graph, lumped, flow, channels, cells, exposure, between });
+  const inertia = inertiaShares(lumped, chip, flow, pieces, fluid.density);
+  const bands = bandsOf({ chip, graph, lumped, flow, ports, cells, inertia, fluid }, depends);
   const stretches = stretchEvidence(lumped, flow, pieces);
   const checks = checkFindings({ chip, graph, fluid, stretches, ports, cells });
   return {
@@ -61,7 +66,7 @@ export function report(
     status: 'solved',
     junctions: junctionsOf(lumped),
     fluid: { viscosity: fluid.viscosity, density: fluid.density },
-    ports,
+    ports: bands ? withBands(ports, bands) : ports,
     channels,
     cells: chip.limits.length > 0 ? withStrain(cells, net, lumped, flow) : cells,
     routes: exposure.results,
@@ -74,6 +79,7 @@ export function report(
       powerIn: flow.powerIn,
       dissipation: flow.dissipation,
     },
+    ...(bands && { bands: bands.chip }),
     findings: withAccepted(
       [
         ...graph.findings,
@@ -85,7 +91,7 @@ export function report(
         ...pumps.findings,
         ...(drift?.findings ?? []),
         ...cellFindings,
-        ...inertiaFindings(lumped, chip, flow, pieces, fluid.density),
+        ...inertiaFindings(lumped, inertia),
         ...lumped.findings,
         ...idealNote(graph, lumped),
         ...checks,
@@ -94,6 +100,12 @@ export function report(
     ),
   };
 }
+
+const withBands = (ports: readonly PortResult[], { ports: bands }: ErrorBands): PortResult[] =>
+  ports.map((port, index) => {
+    const band = bands[index];
+    return band ? { ...port, band } : port;
+  });
 
 /** Flow of every duct: 0 where it is joined so that nothing can flow, null where too small for its digits. */
 function ductFlows(

@@ -40,7 +40,8 @@ function difference(a: unknown, b: unknown, total: number): number {
   const one = a as Record<string, unknown>;
   const two = b as Record<string, unknown>;
   const flow = typeof one.flow === 'number' ? Math.abs(one.flow) : null;
-  const weight = flow === null || total === 0 ? 1 : Math.min(1, flow / (SMALL * total));
+  // At rest every flow is round-off.
+  const weight = flow === null ? 1 : total === 0 ? 0 : Math.min(1, flow / (SMALL * total));
   let worst = 0;
   for (const key of new Set([...Object.keys(a), ...Object.keys(b)])) {
     // The balance of a chip is round-off itself, and pressure drops over next to nothing are too: both are held elsewhere.
