@@ -180,28 +180,27 @@ function throughOther(
 ): boolean {
   const { a, b, points } = stretch;
   if (a === b) return false;
-  const rootsOfB = new Map<number, number>();
-  const thirdOfB = new Map<number, number[]>();
-  for (const m of marks.byChannel.get(b) ?? []) {
-    const root = links.root(links.node[m]!);
-    rootsOfB.set(root, m);
-    for (const other of marks.byNode.get(root)!) {
-      const c = links.channel[other]!;
+  // Each node once and each third channel once: crowded drawings have hundreds of marks at one node.
+  const rootsOf = (channel: number) =>
+    new Set((marks.byChannel.get(channel) ?? []).map((m) => links.root(links.node[m]!)));
+  const thirdAt = (root: number) => new Set(marks.byNode.get(root)!.map((m) => links.channel[m]!));
+  const rootsOfB = rootsOf(b);
+  const thirdOfB = new Map<number, Set<number>>();
+  for (const root of rootsOfB) {
+    for (const c of thirdAt(root)) {
       if (c === a || c === b) continue;
       const list = thirdOfB.get(c);
-      if (list) list.push(root);
-      else thirdOfB.set(c, [root]);
+      if (list) list.add(root);
+      else thirdOfB.set(c, new Set([root]));
     }
   }
   const half = halfWidest(drawing, stretch);
-  for (const m of marks.byChannel.get(a) ?? []) {
-    const root = links.root(links.node[m]!);
+  for (const root of rootsOf(a)) {
     if (rootsOfB.has(root)) {
       const place = places.find((p) => links.root(p.node) === root);
       if (place && points.every((c) => nearArea(place.area, c.x, c.y, half))) return true;
     }
-    for (const other of marks.byNode.get(root)!) {
-      const c = links.channel[other]!;
+    for (const c of thirdAt(root)) {
       if (c === a || c === b) continue;
       for (const root2 of thirdOfB.get(c) ?? []) {
         const reach = 2 * Math.max(links.stout[root]!, links.stout[root2]!) + 2 * half;
