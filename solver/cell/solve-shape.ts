@@ -9,8 +9,8 @@ import { planMesh } from './plan-mesh.ts';
 import { type CellShape, sharpCorners } from './shape.ts';
 
 /** Of the pressure iteration: where the result is kept, and where only errors are judged by it. */
-const TIGHT = 3e-10;
-const LOOSE = 1e-5;
+const TIGHT = 2e-9;
+const LOOSE = 2e-5;
 /** Coarseness of the mesh that judges at first, over that of the mesh judged. */
 const APART = 1.5;
 /** Errors go with these powers of the coarseness. */

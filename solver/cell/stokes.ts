@@ -11,9 +11,10 @@ export interface StokesFields {
   readonly across: Float64Array[];
   readonly pressure: Float64Array[];
   readonly iterations: number;
-  /** Square of the preconditioned residual of each pattern before the first iteration. */
+  /** Of each pattern before the first iteration: square of the preconditioned residual, power f A^-1 f. */
   readonly begun: Float64Array;
-  /** Largest residual of mass conservation over the patterns, of that of the start, in the preconditioner's norm. */
+  readonly free: Float64Array;
+  /** Largest residual of mass conservation over the patterns, as `solveStokes` measures it. */
   readonly residual: number;
 }
 
@@ -50,7 +51,7 @@ export function faceDrives(depth: DepthModes, loads: readonly Float64Array[]): S
  * as by Cahouet and Chabard 1988 (Int. J. Numer. Methods Fluids 8, 869): inverse mass, and for the
  * pressure's mean over the depth the inverse Laplacian besides.
  *
- * @param tolerance of the residual, relative to the start
+ * @param tolerance of the residual, see `worst` below
  * @param from a solution of the same problem to go on from
  */
 export function solveStokes(
@@ -131,14 +132,22 @@ export function solveStokes(
   const rz = dots(r, z, n);
   const begun = from?.begun ?? rz.slice();
   // Where the start is divergence-free but for rounding there is nothing to iterate on.
-  const floor = dots(u, loads.inPlane, n);
+  const free = from?.free ?? dots(u, loads.inPlane, n);
   const acrossEnergy = dots(w, loads.across ?? [], n);
-  for (let c = 0; c < n; c += 1) floor[c] = 1e-28 * Math.abs(floor[c] + acrossEnergy[c]);
+  const floor = free.map((value, c) => 1e-28 * Math.abs(value + acrossEnergy[c]));
   const alpha = new Float64Array(n);
   const beta = new Float64Array(n);
+  /**
+   * Largest residual. For face drives f: a bound of (p, B u), by which power put in and dissipated still
+   * differ, over the power itself: sqrt(p S p) <= sqrt(f A^-1 f), which far exceeds the power f u where
+   * arms are long and shallow. For other loads relative to the start.
+   */
   const worst = (): number => {
+    const power = loads.divergence ? null : dots(u, loads.inPlane, n);
     let most = 0;
-    for (let c = 0; c < n; c += 1) if (rz[c] > floor[c]) most = Math.max(most, rz[c] / begun[c]);
+    for (let c = 0; c < n; c += 1)
+      if (rz[c] > floor[c])
+        most = Math.max(most, power ? (rz[c] * free[c]) / power[c] ** 2 : rz[c] / begun[c]);
     return Math.sqrt(most);
   };
   let iterations = from?.iterations ?? 0;
@@ -171,7 +180,7 @@ export function solveStokes(
     rz.set(next);
     for (let j = 0; j < pressures; j += 1) turn(z[j], beta, d[j]);
   }
-  return { patterns: n, inPlane: u, across: w, pressure: p, iterations, begun, residual: worst() };
+  return { patterns: n, inPlane: u, across: w, pressure: p, iterations, begun, free, residual: worst() };
 }
 
 /** A flow that takes more is not coming. */
