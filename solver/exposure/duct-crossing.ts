@@ -71,8 +71,8 @@ export function ductCrossing(duct: FlowingDuct): Crossing {
     },
     history: () => meanHistory(stations(), length / flow),
     hugging(diameter) {
-      if (Math.min(at(width[0]).clearance, at(width[1]).clearance) < diameter) return null;
-      return huggingOf(duct, stations(), at, diameter);
+      const narrow = at(Math.min(width[0], width[1]));
+      return narrow.clearance < diameter ? null : huggingOf(duct, stations(), at, diameter);
     },
   };
 }
@@ -124,6 +124,7 @@ function huggingOf(
   diameter: number,
 ): Hugging | null {
   const { width, length, rheology } = duct;
+  if (stations.length === 1) return uniformHugging(duct, stations[0], diameter);
   const stress = new Float64Array(stations.length);
   const time = new Float64Array(stations.length);
   let whole = 0;
@@ -138,15 +139,13 @@ function huggingOf(
     time[i] = (share * length) / speed;
     whole += time[i];
   }
-  if (stations.length > 1) {
-    // The narrow end, which lies beyond the outermost station.
-    for (const w of width) {
-      const exposure = at(w);
-      const place = exposure.hugging(diameter);
-      const nearest = stations[w === width[0] ? 0 : stations.length - 1];
-      const gradient = (nearest.gradient * nearest.exposure.conductance) / exposure.conductance;
-      if (place) peak = Math.max(peak, gradient * place.shear);
-    }
+  // The narrow end, which lies beyond the outermost station.
+  for (const w of width) {
+    const exposure = at(w);
+    const place = exposure.hugging(diameter);
+    const nearest = stations[w === width[0] ? 0 : stations.length - 1];
+    const gradient = (nearest.gradient * nearest.exposure.conductance) / exposure.conductance;
+    if (place) peak = Math.max(peak, gradient * place.shear);
   }
   return {
     time: whole,
@@ -157,6 +156,23 @@ function huggingOf(
       return sum;
     },
     history: () => ({ stress, time }),
+  };
+}
+
+function uniformHugging(
+  { length, rheology }: FlowingDuct,
+  { exposure, gradient }: Station,
+  diameter: number,
+): Hugging | null {
+  const place = exposure.hugging(diameter);
+  if (!place) return null;
+  const peak = gradient * place.shear;
+  const time = length / huggingSpeed(place.velocity, place.between, gradient, diameter / 2, rheology);
+  return {
+    time,
+    peak,
+    dose: (exponent) => peak ** exponent * time,
+    history: () => ({ stress: Float64Array.of(peak), time: Float64Array.of(time) }),
   };
 }
 

@@ -4,9 +4,10 @@ import { ellipseExposure } from './section-ellipse.ts';
 import type { HuggingPlace, SectionExposure } from './section-exposure.ts';
 import { rectangleExposure } from './section-rectangle.ts';
 
-/** Sections by profile and size; cleared when it holds more than a chip being edited can need. */
-const known = new Map<string, SectionExposure>();
+/** Sections by profile, then by size; cleared when it holds more than a chip being edited can need. */
+const known = new Map<string, Map<number, Map<number, SectionExposure>>>();
 const MOST = 2000;
+let count = 0;
 
 /** Width and depth in metres, as for `sectionOf`. Kept: the same section is worked out once. */
 export function sectionExposure(
@@ -15,14 +16,27 @@ export function sectionExposure(
   depth: number,
   where: string,
 ): SectionExposure {
-  const key = `${profile.kind === 'polygon' ? polygonKey(profile) : JSON.stringify(profile)} ${width} ${depth}`;
-  let found = known.get(key);
+  if (count >= MOST) {
+    known.clear();
+    count = 0;
+  }
+  const widths = inner(inner(known, profileKey(profile)), depth);
+  let found = widths.get(width);
   if (!found) {
-    if (known.size >= MOST) known.clear();
     found = remembering(make(profile, width, depth, where));
-    known.set(key, found);
+    widths.set(width, found);
+    count += 1;
   }
   return found;
+}
+
+function inner<K, L, V>(outer: Map<K, Map<L, V>>, key: K): Map<L, V> {
+  let map = outer.get(key);
+  if (!map) {
+    map = new Map();
+    outer.set(key, map);
+  }
+  return map;
 }
 
 /** Asked again for the same ball or the same dose, the same answer without working it out. */
@@ -65,10 +79,12 @@ function make(profile: Profile, width: number, depth: number, where: string): Se
 const polygonKeys = new WeakMap<Profile, string>();
 
 /** A measured outline may have thousands of points: its text is made once. */
-function polygonKey(profile: Profile): string {
+function profileKey(profile: Profile): string {
+  if (profile.kind === 'trapezoid') return `trapezoid ${profile.wallAngle}`;
+  if (profile.kind !== 'polygon') return profile.kind;
   let key = polygonKeys.get(profile);
   if (key === undefined) {
-    key = JSON.stringify(profile);
+    key = JSON.stringify(profile.points);
     polygonKeys.set(profile, key);
   }
   return key;

@@ -48,6 +48,7 @@ export function chipNet(
     crossing.push(how);
     element.push(of);
   };
+  const own = new Map<number, ReadonlySet<string>>();
   const all = lumped.inner.length === 0 ? lumped.stretches : [...lumped.stretches, ...lumped.inner];
   all.forEach((stretch, index) => {
     const q = flow.ductFlow[index];
@@ -69,7 +70,12 @@ export function chipNet(
       where: piece.channel,
     });
     const name = index < pieces.length ? lumped.names[index] : '';
-    const of = { name, layer: layer.id, ids: new Set([piece.channel]) };
+    let ids = own.get(piece.channelIndex);
+    if (!ids) {
+      ids = new Set([piece.channel]);
+      own.set(piece.channelIndex, ids);
+    }
+    const of = { name, layer: layer.id, ids };
     // Stand-ins have no peak of their own: their cell counts as ideal.
     const known = index < pieces.length ? how : idealStandIn(how);
     if (q > 0) add(stretch.from, stretch.to, size, known, of);
