@@ -52,6 +52,7 @@ export function mutated(bytes: Uint8Array, next: () => number): Buffer {
 export interface HostileCount {
   opened: number;
   refused: number;
+  /** Processor time of the slowest, ms: other work on the machine does not count. */
   slowest: number;
 }
 
@@ -60,12 +61,13 @@ export function openMutated(bytes: Uint8Array, times: number, seed: number): Hos
   const next = random(seed);
   const count: HostileCount = { opened: 0, refused: 0, slowest: 0 };
   for (let time = 0; time < times; time += 1) {
-    const start = performance.now();
+    const start = process.cpuUsage();
     const { verdict, store } = opening(mutated(bytes, next));
     store?.close();
     if (verdict === 'whole') count.opened += 1;
     else count.refused += 1;
-    count.slowest = Math.max(count.slowest, performance.now() - start);
+    const { user, system } = process.cpuUsage(start);
+    count.slowest = Math.max(count.slowest, (user + system) / 1000);
   }
   return count;
 }
