@@ -132,6 +132,7 @@ describe('files', () => {
       'limits',
       'pumps',
       'balance',
+      'bands',
       'findings',
     ]);
     expect(result.format).toBe('channelwright-result');
