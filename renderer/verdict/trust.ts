@@ -83,13 +83,18 @@ export function trustAnswer(evidence: Evidence): Answer {
     question: QUESTION,
     standing: 'yes',
     says: [
-      bands ? 'Splits within ' : 'Within ',
-      strong(percent(error)),
-      bands ? `, wall shear within ${percent(bands.shear)}` : '',
+      // where every flow is imposed there is nothing that a split could be off by
+      ...(bands && error === 0
+        ? ['Splits follow from the drives, wall shear within ', strong(percent(bands.shear))]
+        : [
+            bands ? 'Splits within ' : 'Within ',
+            strong(percent(error)),
+            bands ? `, wall shear within ${percent(bands.shear)}` : '',
+          ]),
       solved > 0 ? `: ${counted(solved, 'junction')} solved, ` : ': ',
       flow,
     ],
-    margin: band(error),
+    margin: band(bands && error === 0 ? bands.shear : error),
     culprit,
   };
 }

@@ -232,6 +232,8 @@ describe('Can I trust it?', () => {
     expect(text(ask('trust', teeChip(), resultOf({ cells: [cell], bands })))).toBe(
       'Splits within 0.30 %, wall shear within 5.2 %: one junction solved, Re at most 1.2.',
     );
+    const imposed = text(ask('trust', teeChip(), resultOf({ cells: [cell], bands: { ...bands, share: 0 } })));
+    expect(imposed).toContain('Splits follow from the drives, wall shear within 5.2 %');
     expect(text(ask('trust', teeChip(), resultOf({ junctions: 'ideal', bands })))).toBe(
       'Roughly: junctions are taken as ideal, splits may be off by 0.30 %; Re at most 1.2.',
     );
