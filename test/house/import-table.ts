@@ -94,7 +94,11 @@ export const TABLE: Readonly<Record<string, Room>> = {
     ],
   },
   db: { ours: ['solver'], packages: ['better-sqlite3', 'zod'], node: true },
-  main: { ours: ['main', 'db', 'solver'], packages: ['zod', 'csv-stringify'], node: true },
+  main: {
+    ours: ['main', 'db', 'solver'],
+    packages: ['zod', 'csv-stringify', 'csv-parse', 'pdfkit', 'bidi-js', 'saxes', 'svg-pathdata', 'clipper2-ts', 'flatbush'],
+    node: true,
+  },
   'main/contract': { ours: ['solver'], packages: ['zod'] },
   'main/electron': { ours: ['main', 'db', 'solver'], packages: ['electron', 'zod'], node: true },
   renderer: {
