@@ -39,6 +39,7 @@ export default defineConfig({
       input: {
         electron: join(here, 'electron', 'main.ts'),
         'session-worker': join(here, 'session', 'worker.ts'),
+        'mask-worker': join(here, 'requests', 'mask-worker.ts'),
       },
       output: { format: 'es', entryFileNames: '[name].js', chunkFileNames: '[name]-[hash].js' },
     },

@@ -2,6 +2,7 @@ import { z } from 'zod';
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { ChipEdit } from '../../solver/chip/edit.ts';
 import type { Result } from '../../solver/chip/result.ts';
+import { MASK_FORMATS, maskOptions, maskReport, maskState } from './mask.ts';
 
 /**
  * The seam between the page and whichever host runs it: every request a page can make, every event
@@ -287,6 +288,36 @@ export const REQUESTS = {
     }),
     output: z.object({ path: z.string() }),
   },
+
+  /**
+   * Begins to make masks of the chip as it stands, in a thread of its own; the event `mask` tells how the
+   * job goes on, `mask.take` hands over the outcome once (also of a failed job: it then refuses with the
+   * problem). With `path` the files are written: a path that is a folder or ends in a separator takes
+   * them under their own names; any other takes its ending off and is the beginning of every name (a
+   * single file is written to exactly `path`). Without, their bytes are handed back to be kept by the
+   * page. Options left out take the values that `maskOptions` names; everything is read back and
+   * compared before a job is done.
+   */
+  'mask.start': {
+    input: z.strictObject({
+      formats: z.array(z.enum(MASK_FORMATS)).min(1).max(MASK_FORMATS.length),
+      options: maskOptions,
+      path: path.optional(),
+      /** Files that are there already are replaced; else they are a refusal. */
+      replace: z.boolean().optional(),
+    }),
+    output: z.object({ job: z.int().positive() }),
+  },
+  'mask.take': {
+    input: z.strictObject({ job: z.int().positive() }),
+    output: z.object({
+      report: maskReport,
+      /** `bytes` is null where the file was written. */
+      files: z.array(z.object({ name: z.string(), path: z.string().nullable(), bytes: bytes.nullable() })),
+    }),
+  },
+  /** Ends a job; nothing of it is written. */
+  'mask.cancel': { input: z.strictObject({ job: z.int().positive() }), output: nothing },
 } as const;
 
 /** What a host sends unasked, to one window. */
@@ -299,6 +330,8 @@ export const EVENTS = {
   command: z.object({ name: z.string() }),
   /** Something went wrong that no request waits for. */
   problem: z.object({ kind: z.string(), what: z.string(), where: z.string(), remedy: z.string() }),
+  /** How a mask job stands; sent at every step and once at its end. */
+  mask: maskState,
   /** The host is about to stop; everything is kept. */
   closing: z.object({ says: z.string() }),
 } as const;

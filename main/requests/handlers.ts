@@ -4,6 +4,7 @@ import type { Session } from '../session/session.ts';
 import { aboutRequests } from './about.ts';
 import { fileRequests } from './files.ts';
 import { keptRequests } from './kept.ts';
+import { maskRequests } from './masks.ts';
 import { projectRequests } from './project.ts';
 import { userRequests } from './user.ts';
 
@@ -20,6 +21,7 @@ export const HANDLERS: Handlers<Exclude<RequestName, 'files.choose'>> = {
   ...aboutRequests,
   ...fileRequests,
   ...keptRequests,
+  ...maskRequests,
   ...projectRequests,
   ...userRequests,
 };

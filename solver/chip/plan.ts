@@ -120,13 +120,24 @@ export interface PlanPolygon {
   readonly holes: readonly (readonly Point[])[];
 }
 
-export interface PolygonOptions {
-  /** Furthest that a chord may lie off its arc, nm. */
-  readonly chordError: number;
+/** One connected part of a layer's fluid, as lines and true arcs. */
+export interface PlanCavity {
+  /** Number of the cavity in Graph.cavity. */
+  readonly cavity: number;
+  /** Outer boundary counter-clockwise, then holes clockwise; nm. */
+  readonly shape: Shape;
+}
+
+export interface CavityOptions {
   /** Round re-entrant corners as fabrication does; a mask is drawn sharp. */
   readonly fillets: boolean;
   /** Whether the holes of ports and vias count as fluid. */
   readonly holes: boolean;
+}
+
+export interface PolygonOptions extends CavityOptions {
+  /** Furthest that a chord may lie off its arc, nm. */
+  readonly chordError: number;
 }
 
 /** The fluid of one layer as polygons, cavity by cavity. */
@@ -136,6 +147,14 @@ export function planPolygons(
   layer: string,
   options: PolygonOptions,
 ): PlanPolygon[] {
+  return planCavities(chip, graph, layer, options).map(({ cavity, shape }) => {
+    const [outer, ...holes] = shape.map((loop) => flatten(loop, options.chordError));
+    return { cavity, outer: outer!, holes };
+  });
+}
+
+/** The fluid of one layer with its arcs, cavity by cavity. */
+export function planCavities(chip: Chip, graph: Graph, layer: string, options: CavityOptions): PlanCavity[] {
   const drawing = drawingOf(chip);
   const byCavity = new Map<number, PlanBody[]>();
   const add = (cavity: number, body: PlanBody) => {
@@ -171,14 +190,11 @@ export function planPolygons(
     }
   }
   const fillet = options.fillets ? chip.layers[layerIndex]!.fillet : 0;
-  const polygons: PlanPolygon[] = [];
+  const cavities: PlanCavity[] = [];
   for (const [cavity, bodies] of [...byCavity].sort((a, b) => a[0] - b[0])) {
-    for (const shape of planShape(drawing, bodies, fillet).shapes) {
-      const [outer, ...holes] = shape.map((loop) => flatten(loop, options.chordError));
-      polygons.push({ cavity, outer: outer!, holes });
-    }
+    for (const shape of planShape(drawing, bodies, fillet).shapes) cavities.push({ cavity, shape });
   }
-  return polygons;
+  return cavities;
 }
 
 function disc(at: Point, radius: number): PlanBody {

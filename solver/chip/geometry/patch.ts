@@ -1,3 +1,4 @@
+import type { Edge } from '../../mesh/mesh.ts';
 import type { Point } from '../chip.ts';
 import { signedArea } from './area.ts';
 import { MITRE_TURN } from './body.ts';
@@ -217,6 +218,17 @@ export function discPatch(x: number, y: number, radius: number, tag: number): Pa
 function quarter(x: number, y: number, r: number, k: number): [number, number] {
   const corner = k % 4;
   return [x + (corner === 0 ? r : corner === 2 ? -r : 0), y + (corner === 1 ? r : corner === 3 ? -r : 0)];
+}
+
+/** A closed loop of lines and arcs as one body. */
+export function patchOf(loop: readonly Edge[]): Patch {
+  const patch = newPatch();
+  for (let k = 0; k < loop.length; k++) {
+    const { x, y, bulge, tag } = loop[k]!;
+    const next = loop[(k + 1) % loop.length]!;
+    side(patch, { curve: curve(x, y, next.x, next.y, bulge), tag });
+  }
+  return patch;
 }
 
 export function polygonPatch(points: readonly Point[], tag: number): Patch {

@@ -1,0 +1,56 @@
+import type { MaskFormat } from '../../contract/mask.ts';
+import type { Part } from './cells.ts';
+import { dxfLayer, writeDxf } from './dxf.ts';
+import { gdsiiLayer, writeGdsii } from './gdsii.ts';
+import type { MaskModel, MaskPlane } from './model.ts';
+import type { ReadMask } from './read.ts';
+import { readDxf } from './read-dxf.ts';
+import { readGdsii } from './read-gdsii.ts';
+
+/** One way to write a mask and to read back what was written. */
+export interface Format {
+  readonly extension: string;
+  /** Of the numbers in the file, in words and as it stands in the file's name. */
+  readonly unit: string;
+  readonly fileUnit: string;
+  /** One drawing to a file. */
+  readonly onePlane: boolean;
+  /** Whether the outline is drawn as a shape. */
+  readonly outline: boolean;
+  /** Longest sweep of an arc in the file, radians. */
+  readonly arcs: number;
+  /** What the reader calls the layer that holds a part of a drawing. */
+  readonly layer: (plane: MaskPlane, part: Part) => string;
+  readonly write: (model: MaskModel) => Uint8Array | Promise<Uint8Array>;
+  readonly read: (bytes: Uint8Array) => ReadMask | Promise<ReadMask>;
+}
+
+const textOf = (bytes: Uint8Array): string => new TextDecoder('utf-8', { fatal: true }).decode(bytes);
+const bytesOf = (text: string): Uint8Array => new TextEncoder().encode(text);
+/** Any arc whole. */
+const WHOLE = 2 * Math.PI;
+
+export const FORMATS: Readonly<Record<MaskFormat, Format>> = {
+  dxf: {
+    extension: 'dxf',
+    unit: 'µm',
+    fileUnit: 'um',
+    onePlane: false,
+    outline: true,
+    arcs: WHOLE,
+    layer: dxfLayer,
+    write: (model: MaskModel) => bytesOf(writeDxf(model)),
+    read: (bytes: Uint8Array) => readDxf(textOf(bytes)),
+  },
+  gdsii: {
+    extension: 'gds',
+    unit: 'nm (database), µm (user)',
+    fileUnit: 'um',
+    onePlane: false,
+    outline: true,
+    arcs: WHOLE,
+    layer: gdsiiLayer,
+    write: writeGdsii,
+    read: readGdsii,
+  },
+} as unknown as Readonly<Record<MaskFormat, Format>>;
