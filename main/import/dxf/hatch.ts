@@ -1,0 +1,90 @@
+import { ellipsePoints } from '../curves.ts';
+import { EVEN_ODD, type Vertices } from '../drawing.ts';
+import { type Entity, numberFrom } from './pairs.ts';
+import { arcVertices, type Drawn } from './shapes.ts';
+
+const DEGREE = Math.PI / 180;
+
+/** Takes groups one after another, each by the code it must have. */
+class Groups {
+  readonly #entity: Entity;
+  #k: number;
+
+  constructor(entity: Entity, from: number) {
+    this.#entity = entity;
+    this.#k = from;
+  }
+
+  take(code: number): number {
+    const { codes, values, line } = this.#entity;
+    const k = this.#k;
+    if (codes[k] !== code) throw new Unlike();
+    this.#k += 1;
+    return numberFrom(values[k], line + 2 * k + 2, code);
+  }
+
+  maybe(code: number, fallback: number): number {
+    return this.#entity.codes[this.#k] === code ? this.take(code) : fallback;
+  }
+}
+
+/** The groups do not follow as a boundary's do. */
+class Unlike extends Error {}
+
+/** Boundaries of a filled area; those with splines are not read. */
+export function hatch(entity: Entity): Drawn {
+  const start = entity.codes.indexOf(91);
+  if (start < 0) return { not: 'hatches without a boundary' };
+  try {
+    const groups = new Groups(entity, start);
+    const count = groups.take(91);
+    const loops: Vertices[] = [];
+    for (let i = 0; i < count; i += 1) loops.push(boundary(groups));
+    return { loops, how: EVEN_ODD };
+  } catch (error) {
+    if (error instanceof Unlike) return { not: 'hatches whose boundary is of another sort' };
+    throw error;
+  }
+}
+
+function boundary(groups: Groups): Vertices {
+  const flags = groups.take(92);
+  const out: number[] = [];
+  if (flags & 2) {
+    const bulges = groups.take(72) !== 0;
+    groups.take(73);
+    const count = groups.take(93);
+    for (let i = 0; i < count; i += 1) {
+      out.push(groups.take(10), groups.take(20), bulges ? groups.maybe(42, 0) : 0);
+    }
+  } else {
+    const count = groups.take(93);
+    for (let i = 0; i < count; i += 1) edge(groups, out);
+  }
+  const sources = groups.maybe(97, 0);
+  for (let i = 0; i < sources; i += 1) groups.maybe(330, 0);
+  return Float64Array.from(out);
+}
+
+/** Appends an edge without its last point, which the next one begins with. */
+function edge(groups: Groups, out: number[]): void {
+  const kind = groups.take(72);
+  if (kind === 1) {
+    out.push(groups.take(10), groups.take(20), 0);
+    groups.take(11);
+    groups.take(21);
+    return;
+  }
+  if (kind !== 2 && kind !== 3) throw new Unlike();
+  const [x, y] = [groups.take(10), groups.take(20)];
+  const [ax, ay] = kind === 3 ? [groups.take(11), groups.take(21)] : [0, 0];
+  const size = groups.take(40);
+  let from = groups.take(50) * DEGREE;
+  let to = groups.take(51) * DEGREE;
+  const forward = groups.take(73) !== 0;
+  if (to <= from) to += 2 * Math.PI;
+  // A clockwise edge gives its angles mirrored.
+  if (!forward) [from, to] = [-from, -to];
+  if (kind === 2) out.push(...arcVertices(x, y, size, from, to - from).slice(0, -3));
+  else out.push(...ellipsePoints(x, y, ax, ay, size, from, to, Math.hypot(ax, ay) * 1e-5).slice(0, -3));
+}
