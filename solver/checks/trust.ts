@@ -1,6 +1,7 @@
 import type { Layer } from '../chip/chip.ts';
 import type { Evidence, StretchEvidence } from './evidence.ts';
 import type { Found, Gathered } from './gather.ts';
+import { CREEPING, entranceError, entranceLength, softRoofError } from './leave-out.ts';
 import type { ProcessRules } from './process.ts';
 import { digits, length, METRE, percent, placeOf } from './words.ts';
 
@@ -11,16 +12,6 @@ const FLAT = 20;
 const LOOSE = 0.02;
 const BLOOD = 0.3e-3;
 const SOFT = 0.05;
-/** Below this Reynolds number an entrance is that of creeping flow, which solved junctions hold. */
-const CREEPING = 1;
-/** Excess pressure of a developing flow over ½ density × velocity²: a pipe; no duct has more by much. */
-const EXCESS = 1.31;
-
-/** Entrance length over hydraulic diameter: Durst, Ray, Ünsal and Bayoumi 2005, J. Fluids Eng. 127, 1154. */
-export function entranceLength(reynolds: number): number {
-  return (0.619 ** 1.6 + (0.0567 * reynolds) ** 1.6) ** (1 / 1.6);
-}
-
 /** What the solved numbers leave out, for every stretch, junction and the chip. */
 export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found: Gathered): void {
   const { chip, graph, fluid } = evidence;
@@ -84,8 +75,7 @@ function entrance(
 ): void {
   const share = (hydraulicDiameter * entranceLength(reynolds)) / result.length;
   if (share <= DEVELOPING) return;
-  const speed = Math.abs(result.flow ?? 0) / area;
-  const error = (EXCESS * density * speed ** 2) / 2 / Math.abs(result.pressureDrop);
+  const error = entranceError(result, area, density);
   add({
     kind: 'entrance-length',
     severity: share > 5 * DEVELOPING && error > 0.05 ? 'warn' : 'note',
@@ -109,7 +99,7 @@ function softRoof(
   const most = Math.max(Math.abs(pressure[0]), Math.abs(pressure[1]));
   const x = (Math.max(...width) * most) / (modulus.number * (layer.depth / METRE));
   if (x <= SOFT) return;
-  const error = ((1 + x) ** 4 - 1) / (4 * x) - 1;
+  const error = softRoofError(x);
   const roof = { modulus: modulus.number, thickness: 5e-3, poisson: 0.5 };
   add({
     kind: 'soft-roof',

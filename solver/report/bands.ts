@@ -1,11 +1,9 @@
-import type { Chip } from '../chip/chip.ts';
-import type { Graph } from '../chip/graph.ts';
 import type { Bands, CellResult, PortResult } from '../chip/result.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { NANOMETRES } from '../lump/stretches.ts';
 import type { Gradient, Target } from '../network/sensitivity.ts';
 import type { NetworkSolution } from '../network/spec.ts';
+import { blockErrors, ductErrors, type Parts } from './part-errors.ts';
 
 /** How far the numbers may be off: the chip's worst, and those of each port, null where it takes no flow. */
 export interface ErrorBands {
@@ -13,40 +11,30 @@ export interface ErrorBands {
   readonly ports: readonly (NonNullable<PortResult['band']> | null)[];
 }
 
-export interface Solved {
-  readonly chip: Chip;
-  readonly graph: Graph;
-  readonly lumped: Lumped;
-  readonly flow: NetworkSolution;
+export interface Solved extends Parts {
   readonly ports: readonly PortResult[];
   readonly cells: readonly CellResult[];
-  /** Share by which inertia shifts each cell. */
-  readonly inertia: Float64Array;
   readonly fluid: Fluid;
 }
 
 /** Ports times ducts beyond which bands would cost more than the answer. */
 const MOST_WORK = 2e6;
-/** Of the width of what meets at an ideal junction: by how much each arm may be longer or shorter in effect. */
-const EXCESS = 0.5;
 /** Of all that enters: less than this is a trickle. */
 const TRICKLE = 1e-6;
 /** Errors below a millionth are round-off, and of no use to anybody. */
 const told = (error: number): number => (error < 1e-6 ? 0 : error);
-/** Relative error of a centreline that stands in for a cell. */
-const STAND_IN = 0.5;
 
 /**
- * The sum of what the solver knows of its own errors, to first order and in the direction that harms most:
- * every duct by its section's error and the excess length of ideal junctions at its ends, every solved cell
- * by its flow error and inertia. Null where the network follows laws of its own, has faults, or is so large
- * that it would take longer than the solve.
+ * The sum of what the solver knows of its own errors, to first order and in the direction that harms most
+ * (`part-errors.ts`): every duct by its section, its entrance, a soft roof left out and ideal junctions and
+ * bends, every solved cell by its flow error and inertia. Null where the network follows laws of its own, has
+ * faults, or is so large that it would take longer than the solve.
  */
 export function bandsOf(
   solved: Solved,
   depends: (targets: readonly Target[]) => Gradient[] | null,
 ): ErrorBands | null {
-  const { lumped, flow, ports, cells, inertia, fluid } = solved;
+  const { lumped, flow, ports, cells, fluid } = solved;
   const drives = ports.flatMap(({ flow: q }, port) =>
     q !== null && q !== 0 && lumped.portDrive[port] >= 0 ? [{ port, drive: lumped.portDrive[port], q }] : [],
   );
@@ -54,27 +42,35 @@ export function bandsOf(
   const found = depends(drives.map(({ drive }): Target => ({ of: 'drive', index: drive })));
   if (!found) return null;
   const ducts = ductErrors(solved);
-  const blocks = new Float64Array(lumped.spec.blocks.length);
-  lumped.cells.forEach(({ solution }, index) => {
-    if (solution) blocks[lumped.cellBlock[index]] = solution.flowError + inertia[index];
-  });
+  const blocks = blockErrors(solved);
   const entering = drives.reduce((sum, { q }) => sum + Math.max(0, q), 0);
-  const total = sumOf(found.filter((_, i) => drives[i].q > 0));
+  const whole = {
+    byResistance: new Float64Array(ducts.length),
+    weight: new Float64Array(found[0].weight.length),
+  };
+  found.forEach(({ byResistance, weight }, i) => {
+    if (drives[i].q > 0)
+      for (const [sum, own] of [
+        [whole.byResistance, byResistance],
+        [whole.weight, weight],
+      ] as const)
+        for (let k = 0; k < sum.length; k += 1) sum[k] += own[k] / entering;
+  });
+  const powers = blockPowers(lumped, (node) => flow.pressure[node]);
   const own = ports.map((): NonNullable<PortResult['band']> | null => null);
-  found.forEach((gradient, i) => {
+  found.forEach(({ byResistance, weight }, i) => {
     const { port, q } = drives[i];
-    let [byFlow, byShare] = [0, 0];
-    for (let e = 0; e < ducts.length; e += 1) {
-      const share = gradient.byResistance[e] / q;
-      byFlow += ducts[e] * Math.abs(share);
-      byShare += ducts[e] * Math.abs(share - total.byResistance[e] / entering);
-    }
-    for (let b = 0; b < blocks.length; b += 1) {
-      const share = gradient.byBlock[b] / Math.abs(q);
-      byFlow += blocks[b] * share;
-      byShare += blocks[b] * (share + total.byBlock[b] / entering);
-    }
-    own[port] = { flow: told(byFlow), share: told(byShare) };
+    const band = (less: 0 | 1): number => {
+      let off = 0;
+      for (let e = 0; e < ducts.length; e += 1) {
+        off += ducts[e] * Math.abs(byResistance[e] / q - less * whole.byResistance[e]);
+      }
+      // Where a cell's matrix A is off by no more than a share of its energy, |λ·δA·p| ≤ share √(λ·A·λ) √(p·A·p).
+      const adjoint = blockPowers(lumped, (node) => weight[node] / q - less * whole.weight[node]);
+      for (let b = 0; b < blocks.length; b += 1) off += blocks[b] * Math.sqrt(adjoint[b] * powers[b]);
+      return told(off);
+    };
+    own[port] = { flow: band(0), share: band(1) };
   });
   // What is not known of the viscosity shifts flows where pressures drive, pressures where flows do.
   const viscosity = fluid.uncertainty ?? 0;
@@ -96,37 +92,14 @@ export function bandsOf(
   };
 }
 
-function sumOf(gradients: readonly Gradient[]): Pick<Gradient, 'byResistance' | 'byBlock'> {
-  const [first] = gradients;
-  const byResistance = new Float64Array(first?.byResistance.length ?? 0);
-  const byBlock = new Float64Array(first?.byBlock.length ?? 0);
-  for (const gradient of gradients) {
-    for (let e = 0; e < byResistance.length; e += 1) byResistance[e] += gradient.byResistance[e];
-    for (let b = 0; b < byBlock.length; b += 1) byBlock[b] += gradient.byBlock[b];
-  }
-  return { byResistance, byBlock };
-}
-
-/** Relative error of the resistance of every duct of the network, tubing counted exact. */
-function ductErrors({ graph, lumped }: Solved): Float64Array {
-  const errors = new Float64Array(lumped.spec.resistance.length);
-  const widest = lumped.cells.length === 0 ? widestAt(graph) : null;
-  lumped.stretches.forEach(({ piece, length }, e) => {
-    const { from, to } = graph.pieces[piece];
-    const excess = widest ? widest[from] + widest[to] : 0;
-    errors[e] = lumped.ducts[e].error + (EXCESS * excess) / length;
-  });
-  for (let e = lumped.stretches.length; e < lumped.ducts.length; e += 1) errors[e] = STAND_IN;
-  return errors;
-}
-
-/** Width of the widest channel at each junction and chamber, m; 0 at other sites. */
-function widestAt({ sites, pieces }: Graph): Float64Array {
-  return Float64Array.from(sites, ({ kind, arms }) => {
-    if (kind !== 'junction' && kind !== 'chamber') return 0;
-    let most = 0;
-    for (const { piece, end } of arms) most = Math.max(most, pieces[piece].width[end === 'from' ? 0 : 1]);
-    return most / NANOMETRES;
+/** x·A·x of every block, by the values of x at its nodes. */
+function blockPowers({ spec }: Lumped, x: (node: number) => number): Float64Array {
+  return Float64Array.from(spec.blocks, ({ nodes, matrix }) => {
+    const n = nodes.length;
+    let sum = 0;
+    for (let i = 0; i < n; i += 1)
+      for (let j = 0; j < i; j += 1) sum -= matrix[i * n + j] * (x(nodes[i]) - x(nodes[j])) ** 2;
+    return Math.max(0, sum);
   });
 }
 

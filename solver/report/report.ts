@@ -56,7 +56,10 @@ export function report(
   const drift = driftOf(chip, lumped, flow, fluid.density);
   const limits = limitResults({ chip, graph, lumped, flow, channels, cells, exposure, between });
   const inertia = inertiaShares(lumped, chip, flow, pieces, fluid.density);
-  const bands = bandsOf({ chip, graph, lumped, flow, ports, cells, inertia, fluid }, depends);
+  const bands = bandsOf(
+    { chip, graph, lumped, flow, pieces, density: fluid.density, inertia, ports, cells, fluid },
+    depends,
+  );
   const stretches = stretchEvidence(lumped, flow, pieces);
   const checks = checkFindings({ chip, graph, fluid, stretches, ports, cells });
   return {
