@@ -12,6 +12,7 @@ import { type Gradient, gradients, type Target } from './network/sensitivity.ts'
 import { solveNetwork } from './network/solve-network.ts';
 import { solveNonlinear } from './network/solve-nonlinear.ts';
 import type { NetworkSolution, NetworkSpec } from './network/spec.ts';
+import { tangentGradients } from './network/tangent.ts';
 
 /**
  * What may be kept between two solves of a chip that is being edited. Everything here is derived: an
@@ -30,6 +31,8 @@ export interface Memory {
   network(lumped: Lumped): NetworkSolution;
   /** How flows of the network that was solved last depend on its parts; null where they follow laws or have faults. */
   gradients(lumped: Lumped, flow: NetworkSolution, targets: readonly Target[]): Gradient[] | null;
+  /** The same where they follow laws too: for small changes. */
+  slopes(lumped: Lumped, flow: NetworkSolution, targets: readonly Target[]): Gradient[] | null;
 }
 
 /** @param store where solved cells are kept; in memory alone if none is given */
@@ -45,6 +48,12 @@ export function emptyMemory(store?: CellStore): Memory {
     gradients({ spec, laws }, flow, targets) {
       if (!prepared || laws || flow.faults.length > 0) return null;
       return gradients(spec, prepared.network, flow, targets);
+    },
+    slopes({ spec, laws }, flow, targets) {
+      if (!prepared || flow.faults.length > 0) return null;
+      return laws
+        ? tangentGradients(spec, laws, flow, targets)
+        : gradients(spec, prepared.network, flow, targets);
     },
     cells: cellMemory(store),
     lumps: { ducts: new Map(), laws: lawMemory() },

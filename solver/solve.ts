@@ -1,4 +1,4 @@
-import { type Accuracy, DEFAULT_ACCURACY } from './cell/cell.ts';
+import { type Accuracy, DEFAULT_ACCURACY, PREVIEW_ACCURACY } from './cell/cell.ts';
 import type { Chip } from './chip/chip.ts';
 import type { Result } from './chip/result.ts';
 import { fluidOf } from './fluid/fluid.ts';
@@ -9,6 +9,7 @@ import { lump } from './lump/lump.ts';
 import { settleThinning } from './lump/thinning.ts';
 import { emptyMemory, type Memory } from './memory.ts';
 import type { Gradient, Target } from './network/sensitivity.ts';
+import { withMaking } from './report/making.ts';
 import { report } from './report/report.ts';
 
 export interface SolveOptions {
@@ -18,6 +19,8 @@ export interface SolveOptions {
   readonly accuracy?: number;
   /** Take only junctions that memory holds; the others count as ideal and wait in `memory.cells.waiting`. */
   readonly haste?: boolean;
+  /** To preview accuracy, whatever `accuracy` says: while a shape is dragged, never for what is kept. */
+  readonly preview?: boolean;
 }
 
 /**
@@ -33,7 +36,12 @@ export function solve(chip: Chip, options: SolveOptions = {}, memory: Memory = e
   const layout = options.junctions === 'ideal' ? idealLayout(graph) : solvedLayout(chip, options, memory);
   const { lumped, flow } = settleThinning(lump(chip, graph, layout, fluid, memory.lumps), memory.network);
   const depends = (targets: readonly Target[]): Gradient[] | null => memory.gradients(lumped, flow, targets);
-  return report(chip, graph, fluid, lumped, flow, drives, depends);
+  const slopes = (targets: readonly Target[]): Gradient[] | null => memory.slopes(lumped, flow, targets);
+  return withMaking(
+    report(chip, graph, fluid, lumped, flow, drives, depends, accuracyOf(options).flow),
+    { chip, graph, lumped, flow },
+    slopes,
+  );
 }
 
 function solvedLayout(chip: Chip, options: SolveOptions, memory: Memory): Layout {
@@ -47,6 +55,7 @@ function solvedLayout(chip: Chip, options: SolveOptions, memory: Memory): Layout
   return cellLayout(memory.graph(chip), cut, cells, findings);
 }
 
-export function accuracyOf({ accuracy }: SolveOptions): Accuracy {
+export function accuracyOf({ accuracy, preview }: SolveOptions): Accuracy {
+  if (preview) return PREVIEW_ACCURACY;
   return accuracy === undefined ? DEFAULT_ACCURACY : { flow: accuracy, peak: 5 * accuracy };
 }

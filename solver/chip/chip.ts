@@ -47,7 +47,11 @@ export interface Layer {
   readonly profile: Profile;
   /** Radius that fabrication gives re-entrant plan corners; 0 is sharp, where no peak can be quoted. */
   readonly fillet: Nm;
-  readonly tolerance?: { readonly depth?: Tolerance; readonly width?: Tolerance };
+  /**
+   * How far depth and widths may be off. The depth's error is one for the layer, a width's each channel's own,
+   * but for `common`: the share of the width's tolerance that all channels of the layer have alike (0 where absent).
+   */
+  readonly tolerance?: { readonly depth?: Tolerance; readonly width?: Tolerance; readonly common?: number };
   readonly roof?: Roof;
 }
 
@@ -73,6 +77,10 @@ export interface Channel {
   readonly width: readonly [Nm, Nm];
   /** Radius of the centreline at inner vertices; 0 is a mitred corner. */
   readonly bendRadius: Nm;
+  /** Its own depth, where it was measured to differ from its layer's; solved junctions keep the layer's. */
+  readonly depth?: Nm;
+  /** Of its own depth and width, in place of its layer's; the error is then its own too. */
+  readonly tolerance?: { readonly depth?: Tolerance; readonly width?: Tolerance };
 }
 
 export interface Chamber {

@@ -2,6 +2,7 @@ import { BOUNDS } from './bounds.ts';
 import type { Chamber, Channel, LengthUnit, Point } from './chip.ts';
 import { at, Fault } from './schema-fault.ts';
 import { readId, readKeys, readList, readPlan } from './schema-fields.ts';
+import { readOwnTolerances } from './schema-tolerance.ts';
 import { NM_PER_UNIT } from './units-write.ts';
 
 /**
@@ -10,7 +11,7 @@ import { NM_PER_UNIT } from './units-write.ts';
  * (description-parts.ts), by the same rules.
  */
 
-const CHANNEL_KEYS = new Set(['id', 'layer', 'path', 'width', 'bendRadius']);
+const CHANNEL_KEYS = new Set(['id', 'layer', 'path', 'width', 'bendRadius', 'depth', 'tolerance']);
 const CHANNEL_NEEDS = {
   id: '"feed"',
   layer: '"flow"',
@@ -88,6 +89,10 @@ function readChannel(value: unknown, unit: LengthUnit, scale: number, budget: Bu
     width: at(['width'], () => readWidth(raw.width, unit, scale)),
     bendRadius:
       raw.bendRadius === undefined ? 0 : at(['bendRadius'], () => planLength(raw.bendRadius, unit, scale)),
+    ...(raw.depth === undefined ? {} : { depth: at(['depth'], () => planLength(raw.depth, unit, scale)) }),
+    ...(raw.tolerance === undefined
+      ? {}
+      : { tolerance: at(['tolerance'], () => readOwnTolerances(raw.tolerance)) }),
   };
 }
 

@@ -2,13 +2,12 @@ import { z } from 'zod';
 import type { FluidSpec, ShearModel } from '../fluid/spec.ts';
 import type { Profile } from '../section/profile.ts';
 import { BOUNDS } from './bounds.ts';
-import type { Drive, Layer, LengthUnit, Port, Roof, Tolerance, Via } from './chip.ts';
+import type { Drive, Layer, LengthUnit, Port, Roof, Via } from './chip.ts';
 import { readPoint } from './description-lists.ts';
 import { Fault, step, valueInWords } from './schema-fault.ts';
 import { choice, id, inMetres, keyed, list, pair, plan, quantity } from './schema-fields.ts';
 import { pump, reservoir } from './schema-running.ts';
-import { parseQuantity, wholeNm } from './units.ts';
-import { ratioToNumber } from './units-exact.ts';
+import { readTolerances } from './schema-tolerance.ts';
 import { NM_PER_UNIT } from './units-write.ts';
 
 /** The parts of a description that come in small numbers: layers, vias, ports, the fluid. */
@@ -57,25 +56,7 @@ const profile = (unit: LengthUnit) =>
     }),
   );
 
-function readTolerance(value: unknown): Tolerance {
-  const remedy = 'Write a share or a length with its unit, such as "5 %" or "2 um".';
-  if (typeof value !== 'string') {
-    throw new Fault('quantity', `takes a share or a length with its unit; ${valueInWords(value)}.`, remedy);
-  }
-  const share = parseQuantity(value, 'share');
-  if (share.ok) return { share: ratioToNumber(share.exact) };
-  const length = parseQuantity(value, 'length');
-  if (length.ok) return { length: wholeNm(length.exact) };
-  throw new Fault('quantity', length.what.replace('a length', 'a share or a length'), remedy);
-}
-
-const tolerance = keyed(
-  {
-    depth: z.unknown().transform(step(readTolerance)).optional(),
-    width: z.unknown().transform(step(readTolerance)).optional(),
-  },
-  {},
-).transform(defined);
+const tolerance = z.unknown().transform(step(readTolerances));
 
 const roof = (unit: LengthUnit) =>
   keyed(

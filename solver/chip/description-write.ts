@@ -16,6 +16,7 @@ import { FORMAT, VERSION } from './description.ts';
 import type { Process } from './making.ts';
 import type { Pump, Reservoir } from './running.ts';
 import { LENGTHS, NUMBERS } from './schema-making.ts';
+import type { Tolerances } from './schema-tolerance.ts';
 import type { Kind } from './units.ts';
 import { NM_PER_UNIT, planText, writeQuantity } from './units-write.ts';
 
@@ -38,7 +39,12 @@ type Spell = ReturnType<typeof speller>;
 
 const points = (path: readonly Point[], scale: number): Json => path.map(([x, y]) => [x / scale, y / scale]);
 
-function channel({ id, layer, path, width, bendRadius }: Channel, scale: number): Json {
+function channel(
+  { id, layer, path, width, bendRadius, depth, tolerance }: Channel,
+  unit: LengthUnit,
+  spell: Spell,
+): Json {
+  const scale = NM_PER_UNIT[unit];
   const [first, last] = width;
   return {
     id,
@@ -46,6 +52,8 @@ function channel({ id, layer, path, width, bendRadius }: Channel, scale: number)
     path: points(path, scale),
     width: first === last ? first / scale : [first / scale, last / scale],
     ...(bendRadius === 0 ? {} : { bendRadius: bendRadius / scale }),
+    ...(depth === undefined ? {} : { depth: depth / scale }),
+    ...(tolerance && { tolerance: tolerancesOf(tolerance, unit, spell) }),
   };
 }
 
@@ -60,6 +68,12 @@ function profileOf(profile: Profile, spell: Spell): Json {
 const toleranceOf = (tolerance: Tolerance, unit: LengthUnit, spell: Spell): Json =>
   'share' in tolerance ? spell(tolerance.share, 'share') : `${planText(tolerance.length, unit)} ${unit}`;
 
+const tolerancesOf = ({ depth, width, common }: Tolerances, unit: LengthUnit, spell: Spell): Json => ({
+  ...(depth && { depth: toleranceOf(depth, unit, spell) }),
+  ...(width && { width: toleranceOf(width, unit, spell) }),
+  ...(common === undefined ? {} : { common: spell(common, 'share') }),
+});
+
 function layerOf(
   { id, depth, profile, fillet, tolerance, roof }: Layer,
   unit: LengthUnit,
@@ -71,12 +85,7 @@ function layerOf(
     depth: depth / scale,
     profile: profileOf(profile, spell),
     fillet: fillet / scale,
-    ...(tolerance && {
-      tolerance: {
-        ...(tolerance.depth && { depth: toleranceOf(tolerance.depth, unit, spell) }),
-        ...(tolerance.width && { width: toleranceOf(tolerance.width, unit, spell) }),
-      },
-    }),
+    ...(tolerance && { tolerance: tolerancesOf(tolerance, unit, spell) }),
     ...(roof && {
       roof: {
         modulus: spell(roof.modulus, 'modulus'),
@@ -245,7 +254,7 @@ export function writeDescription(chip: Chip): string {
   one('lengthUnit', chip.lengthUnit);
   one('outline', { width: chip.outline.width / scale, height: chip.outline.height / scale });
   list('layers', chip.layers, (layer) => layerOf(layer, chip.lengthUnit, spell), true);
-  list('channels', chip.channels, (entry) => channel(entry, scale), true);
+  list('channels', chip.channels, (entry) => channel(entry, chip.lengthUnit, spell), true);
   list('chambers', chip.chambers, ({ id, layer, outline }) => ({
     id,
     layer,

@@ -165,7 +165,7 @@ describe('messages', () => {
       but('"bendRadius"', '"bendRadios"'),
       'channels[1].bendRadios (taper)',
       'bendRadios is no known key here.',
-      'Did you mean "bendRadius"? Known: id, layer, path, width, bendRadius.',
+      'Did you mean "bendRadius"? Known: id, layer, path, width, bendRadius, depth, tolerance.',
     ],
     [
       but('[[1000, 13000], ["20 mm", 13000]]', '[[1000, 13000], ["20 mm", "x"]]'),

@@ -25,12 +25,14 @@ export interface Result {
   };
   /** How far the numbers may be off, as far as the solver knows; absent where it cannot be said. */
   readonly bands?: Bands;
+  /** The widest that the tolerances of making do; absent where none are given. */
+  readonly making?: MakingOfChip;
   readonly findings: readonly Finding[];
 }
 
 /**
  * Relative errors, the worst of the chip: to first order, every resistance and junction off by its own
- * error in the direction that harms most. Tolerances of making are not in it.
+ * error in the direction that harms most. Tolerances of making are not in it: those are `Making`.
  */
 export interface Bands {
   /** Of the share of the flow that a port takes. */
@@ -43,6 +45,36 @@ export interface Bands {
   readonly pressure: number;
 }
 
+/** What the tolerances of making do to a figure, relative to it and to first order. */
+export interface Making {
+  /** Every tolerance used up, each in the direction that harms most. */
+  readonly worst: number;
+  /** Root of the sum of squares of independent errors: as likely to hold as the tolerances are. */
+  readonly likely: number;
+  /** What does most of it, and its part of the square of `likely`; absent where nothing does. */
+  readonly chief?: {
+    readonly what: 'depth' | 'width';
+    /** A layer where it is off alike all over it, else one channel. */
+    readonly of: 'layer' | 'channel';
+    readonly id: string;
+    readonly part: number;
+  };
+}
+
+export interface MakingOfPort {
+  readonly flow: Making;
+  readonly share: Making;
+  /** At the chip's side of the tubing, where a flow is imposed. */
+  readonly pressure?: Making;
+}
+
+export interface MakingOfChip {
+  readonly share: Making;
+  readonly flow: Making;
+  readonly shear: Making;
+  readonly pressure: Making;
+}
+
 export interface PortResult {
   readonly id: string;
   /** Pa at the chip's side of the tubing. */
@@ -53,6 +85,7 @@ export interface PortResult {
   readonly share: number | null;
   /** Relative errors of flow and share, as `Bands`. */
   readonly band?: { readonly flow: number; readonly share: number };
+  readonly making?: MakingOfPort;
 }
 
 export interface ChannelResult {
@@ -79,6 +112,8 @@ export interface PieceResult {
   readonly along?: readonly [number, number];
   /** Relative error of the resistance as the section solve knows it. */
   readonly accuracy?: number;
+  /** Of its flow, of the share that is of all that enters, and of peak wall shear. */
+  readonly making?: { readonly flow: Making; readonly share: Making; readonly shear: Making };
 }
 
 export interface CellResult {
@@ -97,6 +132,8 @@ export interface CellResult {
   readonly pressures?: readonly number[];
   /** Bound of the relative error of the peak, where there is one. */
   readonly peakError?: number;
+  /** Of the peak, as of the channel that carries most through the cell. */
+  readonly making?: Making;
   /** Where limits are given: the fastest stretching inside, and viscous dissipation per volume, W/m^3. */
   readonly stretch?: StretchResult;
   readonly dissipation?: { readonly mean: number; readonly peak: number | null };
@@ -184,6 +221,8 @@ export interface TargetResult {
   readonly wanted: number;
   readonly got: number | null;
   readonly met: boolean;
+  /** Of `got`. */
+  readonly making?: Making;
 }
 
 export interface LimitResult {

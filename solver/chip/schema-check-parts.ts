@@ -1,9 +1,10 @@
 import type { Profile } from '../section/profile.ts';
-import type { Chamber, Channel, Layer, Point, Port, Tolerance, Via } from './chip.ts';
+import type { Chamber, Channel, Layer, Point, Port, Via } from './chip.ts';
 import { at, Fault, quoted } from './schema-fault.ts';
 import { outlineFault } from './schema-outline.ts';
 import { between, notNegative, positive } from './schema-range.ts';
 import { checkPump, checkReservoir } from './schema-running.ts';
+import { checkTolerances } from './schema-tolerance.ts';
 import { metres } from './units.ts';
 import { formatQuantity } from './units-format.ts';
 
@@ -47,20 +48,11 @@ function checkProfile(profile: Profile): void {
   }
 }
 
-function checkTolerance(tolerance: Tolerance, key: string): void {
-  if ('share' in tolerance ? tolerance.share >= 0 && tolerance.share < 1 : tolerance.length >= 0) return;
-  throw new Fault('range', 'must lie from 0 to below 100 %, or be a length.', 'Correct the tolerance.', [
-    key,
-  ]);
-}
-
 export function checkLayer(layer: Layer): void {
   positive(layer.depth, 'depth', 'length');
   notNegative(layer.fillet, 'fillet', 'length');
   checkProfile(layer.profile);
-  const { depth, width } = layer.tolerance ?? {};
-  if (depth) at(['tolerance'], () => checkTolerance(depth, 'depth'));
-  if (width) at(['tolerance'], () => checkTolerance(width, 'width'));
+  checkTolerances(layer.tolerance);
   const { roof } = layer;
   if (roof === undefined) return;
   at(['roof'], () => {
@@ -82,7 +74,9 @@ export function checkLayer(layer: Layer): void {
 }
 
 export function checkChannel(channel: Channel): void {
-  const { path, width, bendRadius } = channel;
+  const { path, width, bendRadius, depth } = channel;
+  if (depth !== undefined) positive(depth, 'depth', 'length');
+  checkTolerances(channel.tolerance);
   for (const end of width) positive(end, 'width', 'length');
   notNegative(bendRadius, 'bendRadius', 'length');
   if (path.length < 2 || path.every(([x, y]) => x === path[0]![0] && y === path[0]![1])) {
@@ -139,7 +133,8 @@ export function checkPort(port: Port): void {
 
 /** What a layer's cross-section asks of a channel that lies on it. */
 export function checkOnLayer(channel: Channel, layer: Layer): void {
-  const { profile, depth } = layer;
+  const { profile } = layer;
+  const depth = channel.depth ?? layer.depth;
   if (profile.kind === 'circle' && channel.width.some((width) => width !== depth)) {
     const wrong = channel.width.find((width) => width !== depth)!;
     throw new Fault(

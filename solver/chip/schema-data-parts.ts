@@ -1,12 +1,13 @@
 import type { z } from 'zod';
 import type { Profile } from '../section/profile.ts';
 import { BOUNDS } from './bounds.ts';
-import type { Chamber, Channel, Drive, Layer, Point, Port, Tolerance, Via } from './chip.ts';
+import type { Chamber, Channel, Drive, Layer, Point, Port, Via } from './chip.ts';
 import type { ListName, PartOf } from './schema-check.ts';
-import { byKey, byKind, field, kind, nm, readNm, si } from './schema-data.ts';
+import { byKind, field, kind, nm, readNm, si } from './schema-data.ts';
 import { at, Fault } from './schema-fault.ts';
 import { choice, id, keyed, list, pair, readId, readKeys, readList } from './schema-fields.ts';
 import { pumpData, reservoirData } from './schema-running.ts';
+import { ownTolerancesData, tolerancesData } from './schema-tolerance.ts';
 
 /**
  * Layers, channels, chambers, vias and ports that come as data, with exactly the keys of chip.ts. Channels
@@ -40,7 +41,7 @@ const CHANNEL = {
   width: '[200, 200]',
   bendRadius: '0',
 };
-const CHANNEL_KEYS = new Set(Object.keys(CHANNEL));
+const CHANNEL_KEYS = new Set([...Object.keys(CHANNEL), 'depth', 'tolerance']);
 const CHAMBER = { id: '"well"', layer: '"flow"', outline: '[[0, 0], [4000, 0], [4000, 2000]]' };
 const CHAMBER_KEYS = new Set(Object.keys(CHAMBER));
 
@@ -55,6 +56,10 @@ function readChannel(value: unknown): Channel {
       return [readNm(first), readNm(last)];
     }),
     bendRadius: at(['bendRadius'], () => readNm(raw.bendRadius)),
+    ...(raw.depth === undefined ? {} : { depth: at(['depth'], () => readNm(raw.depth)) }),
+    ...(raw.tolerance === undefined
+      ? {}
+      : { tolerance: at(['tolerance'], () => ownTolerancesData(raw.tolerance)) }),
   };
 }
 
@@ -87,13 +92,7 @@ const drive = byKind<Drive>({
   closed: keyed({ kind: kind('closed') }, {}),
 });
 
-const tolerance = byKey<Tolerance>(
-  [
-    ['share', keyed({ share: si }, {})],
-    ['length', keyed({ length: nm }, {})],
-  ],
-  'tolerance',
-);
+const tolerance = field(tolerancesData);
 
 const layer: z.ZodType<Layer> = keyed(
   {
@@ -101,10 +100,7 @@ const layer: z.ZodType<Layer> = keyed(
     depth: nm,
     profile,
     fillet: nm,
-    tolerance: keyed(
-      { depth: tolerance.exactOptional(), width: tolerance.exactOptional() },
-      {},
-    ).exactOptional(),
+    tolerance: tolerance.exactOptional(),
     roof: keyed(
       {
         modulus: si,

@@ -2,7 +2,7 @@ import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
 import { type DuctFlowLaw, type DuctLaws, ductLaws } from '../section/rheology/duct-law.ts';
 import type { Rheology } from '../section/rheology/local.ts';
-import { depthOf, type Stretch } from './stretches.ts';
+import { channelDepth, type Stretch } from './stretches.ts';
 
 /** Keeps what was solved for one fluid while the chip is edited. */
 export interface LawMemory {
@@ -44,7 +44,7 @@ export function chipLaws(
       {
         profile: layer.profile,
         width: stretch.width,
-        depth: depthOf(chip, piece.layerIndex),
+        depth: channelDepth(chip, piece),
         length: stretch.length,
         ...(layer.roof ? { roof: layer.roof } : {}),
       },

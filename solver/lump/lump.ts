@@ -9,7 +9,7 @@ import { driveOf } from './drives.ts';
 import { type Duct, ductOf } from './duct.ts';
 import { chipLaws, type LawMemory } from './laws.ts';
 import type { Layout } from './layout.ts';
-import { depthOf, type Stretch } from './stretches.ts';
+import { channelDepth, type Stretch } from './stretches.ts';
 
 /** The chip lumped into a network of hydraulic resistances, with the way back to the drawing. */
 export interface Lumped extends Layout {
@@ -108,10 +108,11 @@ const CIRCLE: Profile = { kind: 'circle' };
 function stretchDuct(chip: Chip, graph: Graph, stretch: Stretch, memory: Map<string, Duct>): Duct {
   const piece = graph.pieces[stretch.piece];
   const layer = chip.layers[piece.layerIndex];
-  const key = `${profileKey(layer.profile)} ${layer.depth} ${stretch.width[0]} ${stretch.width[1]}`;
+  const depth = channelDepth(chip, piece);
+  const key = `${profileKey(layer.profile)} ${depth} ${stretch.width[0]} ${stretch.width[1]}`;
   let duct = memory.get(key);
   if (!duct) {
-    duct = ductOf(layer.profile, stretch.width, depthOf(chip, piece.layerIndex), piece.channel);
+    duct = ductOf(layer.profile, stretch.width, depth, piece.channel);
     memory.set(key, duct);
   }
   return duct;

@@ -1,4 +1,5 @@
 import type { Chip } from '../chip/chip.ts';
+import type { Piece } from '../chip/graph.ts';
 
 /** A stretch of channel that the network sees as one duct. */
 export interface Stretch {
@@ -20,6 +21,11 @@ export interface Stretch {
 
 /** In a metre; dividing by it rounds once, which multiplying by 1e-9 does not. */
 export const NANOMETRES = 1e9;
+
+/** Depth of a channel in metres: its own, where it was measured, else its layer's. */
+export function channelDepth(chip: Chip, { channelIndex, layerIndex }: Piece): number {
+  return (chip.channels[channelIndex].depth ?? chip.layers[layerIndex].depth) / NANOMETRES;
+}
 
 /** Depth of a layer in metres. */
 export function depthOf(chip: Chip, layerIndex: number): number {

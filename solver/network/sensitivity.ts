@@ -2,14 +2,16 @@ import { solve } from '../sparse/solve.ts';
 import type { PreparedNetwork } from './prepare.ts';
 import type { NetworkSolution, NetworkSpec } from './spec.ts';
 
-/** A flow whose dependence is asked for: that of a duct or of a drive, by index. */
+/** What dependence is asked of: the flow of a duct or of a drive, the pressure of a node, by index. */
 export interface Target {
-  readonly of: 'duct' | 'drive';
+  readonly of: 'duct' | 'drive' | 'node';
   readonly index: number;
 }
 
 export interface Gradient {
-  /** m³/s by which the flow changes per relative change of each duct's resistance: ∂q/∂ln R, ducts. */
+  /** λ of each node (far ends of tubing included): what the target gains per flow driven in there. */
+  readonly weight: Float64Array;
+  /** m³/s (Pa for a node) by which the target changes per relative change of each duct's resistance: ∂q/∂ln R, ducts. */
   readonly byResistance: Float64Array;
   /**
    * m³/s per relative error of each block, blocks: the most by which the flow changes where the block's
@@ -23,7 +25,7 @@ export interface Gradient {
 /**
  * How flows of a solved network depend on every resistance and every drive, by one more solve with the
  * factor at hand for each: with λ the pressures' weights in the flow q (A λ = ∂q/∂p; at a pressure-driven
- * node λ = −1 where its own flow is asked for, else 0),
+ * node λ = −1 where its own flow is asked for, else 0; for the pressure of a node A λ is 1 there),
  *   ∂q/∂ln R_e = (λ from − λ to) q_e, less q itself where e is the duct asked for,
  *   ∂q/∂(flow driven in at i) = λ_i,   ∂q/∂(pressure given at k) = −Σ over edges at k of g (λ_k − λ_other),
  * plus ± g of the duct asked for where it ends at k.
@@ -49,6 +51,10 @@ export function gradients(
       if (from[index] === to[index]) return;
       add(from[index], conductance[index]);
       add(to[index], -conductance[index]);
+      return;
+    }
+    if (of === 'node') {
+      add(index, 1);
       return;
     }
     if (spec.drives[index].kind === 'flow') return;
@@ -93,6 +99,6 @@ export function gradients(
       kind === 'flow' ? weight[node] : supplied[driveNode[d]],
     );
     if (of === 'drive' && spec.drives[index].kind === 'flow') byDrive[index] = 1;
-    return { byResistance, byBlock, byDrive };
+    return { weight, byResistance, byBlock, byDrive };
   });
 }

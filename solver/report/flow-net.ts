@@ -10,7 +10,7 @@ import { sectionExposure } from '../exposure/section-of.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { PlacedCell } from '../lump/layout.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { depthOf, NANOMETRES } from '../lump/stretches.ts';
+import { channelDepth, depthOf, NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Rheology } from '../section/rheology/local.ts';
 import { chamberPools, type Pool } from './pools.ts';
@@ -60,7 +60,7 @@ export function chipNet(
     const how = ductCrossing({
       profile: layer.profile,
       width: stretch.width,
-      depth: depthOf(chip, piece.layerIndex),
+      depth: channelDepth(chip, piece),
       length: stretch.length,
       flow: size,
       drop,

@@ -64,6 +64,17 @@ export const TABLE: Readonly<Record<string, Room>> = {
       'solver/network',
     ],
   },
+  'solver/spread': {
+    ours: [
+      'solver/problem',
+      'solver/fluid',
+      'solver/section',
+      'solver/chip',
+      'solver/cell',
+      'solver/network',
+      'solver/lump',
+    ],
+  },
   'solver/report': {
     ours: [
       'solver/problem',
@@ -75,11 +86,13 @@ export const TABLE: Readonly<Record<string, Room>> = {
       'solver/exposure',
       'solver/checks',
       'solver/lump',
+      'solver/spread',
     ],
   },
   solver: {
     ours: [
       'solver/lump',
+      'solver/spread',
       'solver/report',
       'solver/problem',
       'solver/sparse',
@@ -96,7 +109,17 @@ export const TABLE: Readonly<Record<string, Room>> = {
   db: { ours: ['solver'], packages: ['better-sqlite3', 'zod'], node: true },
   main: {
     ours: ['main', 'db', 'solver'],
-    packages: ['zod', 'csv-stringify', 'csv-parse', 'pdfkit', 'bidi-js', 'saxes', 'svg-pathdata', 'clipper2-ts', 'flatbush'],
+    packages: [
+      'zod',
+      'csv-stringify',
+      'csv-parse',
+      'pdfkit',
+      'bidi-js',
+      'saxes',
+      'svg-pathdata',
+      'clipper2-ts',
+      'flatbush',
+    ],
     node: true,
   },
   'main/contract': { ours: ['solver'], packages: ['zod'] },
