@@ -4,15 +4,10 @@ import { Problem } from '../../solver/problem/problem.ts';
 import { solve } from '../../solver/solve.ts';
 import { resultCsv } from '../export/csv-result.ts';
 import { type Output, writeFiles } from '../export/write-files.ts';
-import { type CliOptions, COMMAND, cliOptions, USAGE } from './options.ts';
+import { type CliOptions, cliOptions, USAGE } from './options.ts';
 import { readChipFile } from './read-chip.ts';
 import { allMet, reportText } from './report.ts';
-
-/** Where a command speaks. */
-export interface Io {
-  out(text: string): void;
-  err(text: string): void;
-}
+import { type Io, problemOf, problemText } from './say.ts';
 
 /** The path that a file has, or will have, whatever links lead to it. */
 async function placeOf(path: string): Promise<string> {
@@ -43,14 +38,6 @@ async function checkPlaces({ file, csv, json }: CliOptions): Promise<void> {
     named[twice]!,
     'Give each output a file of its own.',
   );
-}
-
-/** A problem as three lines: what, where, what to do. */
-function problemText(problem: Problem, file: string): string {
-  const { what, where, remedy } = problem;
-  const elsewhere = problem.kind === 'output' || where === COMMAND || file === '' || where.startsWith(file);
-  const inFile = elsewhere ? where : `${file}${where && `, ${where}`}`;
-  return `${what}\n  where: ${inFile || COMMAND}\n  do:    ${remedy}\n`;
 }
 
 async function run(options: CliOptions, io: Io): Promise<number> {
@@ -90,16 +77,7 @@ export async function main(argv: readonly string[], io: Io): Promise<number> {
     file = options.file;
     return await run(options, io);
   } catch (error) {
-    const problem =
-      error instanceof Problem
-        ? error
-        : new Problem(
-            'not-converged',
-            `The program failed: ${error instanceof Error ? error.message.split('\n')[0] : 'unknown'}.`,
-            '',
-            'This is a fault of the program; keep the file so that it can be found.',
-          );
-    io.err(problemText(problem, file));
+    io.err(problemText(problemOf(error), file));
     return 2;
   }
 }

@@ -94,6 +94,8 @@ export const maskReport = z.object({
       compared: z.array(z.object({ plane: z.string(), difference: z.number(), allowed: z.number() })),
     }),
   ),
+  /** What the process cannot make as drawn on the mask; empty where all is well. */
+  findings: z.array(z.object({ where: z.string(), says: z.string() })),
   /** What whoever uses the masks must know, in sentences. */
   notes: z.array(z.string()),
 });

@@ -3,9 +3,13 @@ import type { Part } from './cells.ts';
 import { dxfLayer, writeDxf } from './dxf.ts';
 import { gdsiiLayer, writeGdsii } from './gdsii.ts';
 import type { MaskModel, MaskPlane } from './model.ts';
+import { PDF_ARC, writePdf } from './pdf.ts';
 import type { ReadMask } from './read.ts';
 import { readDxf } from './read-dxf.ts';
 import { readGdsii } from './read-gdsii.ts';
+import { readPdf } from './read-pdf.ts';
+import { readSvg } from './read-svg.ts';
+import { SVG_ARC, writeSvg } from './svg.ts';
 
 /** One way to write a mask and to read back what was written. */
 export interface Format {
@@ -15,8 +19,6 @@ export interface Format {
   readonly fileUnit: string;
   /** One drawing to a file. */
   readonly onePlane: boolean;
-  /** Whether the outline is drawn as a shape. */
-  readonly outline: boolean;
   /** Longest sweep of an arc in the file, radians. */
   readonly arcs: number;
   /** What the reader calls the layer that holds a part of a drawing. */
@@ -36,21 +38,39 @@ export const FORMATS: Readonly<Record<MaskFormat, Format>> = {
     unit: 'µm',
     fileUnit: 'um',
     onePlane: false,
-    outline: true,
     arcs: WHOLE,
     layer: dxfLayer,
-    write: (model: MaskModel) => bytesOf(writeDxf(model)),
-    read: (bytes: Uint8Array) => readDxf(textOf(bytes)),
+    write: (model) => bytesOf(writeDxf(model)),
+    read: (bytes) => readDxf(textOf(bytes)),
   },
   gdsii: {
     extension: 'gds',
     unit: 'nm (database), µm (user)',
     fileUnit: 'um',
     onePlane: false,
-    outline: true,
     arcs: WHOLE,
     layer: gdsiiLayer,
     write: writeGdsii,
     read: readGdsii,
   },
-} as unknown as Readonly<Record<MaskFormat, Format>>;
+  svg: {
+    extension: 'svg',
+    unit: 'mm',
+    fileUnit: 'mm',
+    onePlane: true,
+    arcs: SVG_ARC,
+    layer: dxfLayer,
+    write: (model) => bytesOf(writeSvg(model)),
+    read: (bytes) => readSvg(textOf(bytes)),
+  },
+  pdf: {
+    extension: 'pdf',
+    unit: 'true size',
+    fileUnit: 'true-size',
+    onePlane: false,
+    arcs: PDF_ARC,
+    layer: dxfLayer,
+    write: writePdf,
+    read: readPdf,
+  },
+};

@@ -2,7 +2,9 @@ import type { Chip } from '../../../solver/chip/chip.ts';
 import { metres } from '../../../solver/chip/units.ts';
 import { Problem } from '../../../solver/problem/problem.ts';
 import type { MaskFormat, MaskOptions, MaskPlaneReport, MaskReport } from '../../contract/mask.ts';
+import { PARTS, shifts } from './cells.ts';
 import { compare } from './compare.ts';
+import { openingFindings } from './findings.ts';
 import { FORMATS } from './formats.ts';
 import { type MaskModel, type MaskPlane, maskModel } from './model.ts';
 import { fileName } from './names.ts';
@@ -73,20 +75,17 @@ function checked(
   arcs: number,
   format: MaskFormat,
 ): MaskReport['files'][number]['compared'] {
-  const { planes, wafer, centre, settings } = model;
-  const places = wafer
-    ? wafer.centres.map(([x, y]) => [x - centre[0], y - centre[1]] as const)
-    : [[0, 0] as const];
+  const { planes, settings } = model;
+  const places = shifts(model);
   const key = ([x, y]: readonly [number, number]): string => `${Math.round(x)} ${Math.round(y)}`;
   const got = new Set(found.shifts.map(key));
   if (got.size !== places.length || places.some((place) => !got.has(key(place))))
     throw unreadable('the chips are not where they were set');
   return planes.flatMap((plane) =>
-    (['cavities', 'marks', 'outline', 'lane'] as const).flatMap((part) => {
+    PARTS.flatMap((part) => {
       const shapes = plane[part];
       const loops = found.loops.get(FORMATS[format].layer(plane, part)) ?? [];
-      // a format that draws no outline has none to read
-      if (shapes.length === 0 || (part === 'outline' && !FORMATS[format].outline)) return [];
+      if (shapes.length === 0) return [];
       const { difference, allowed } = compare(shapes, loops, settings.chordError, arcs, found.offArc);
       if (!(difference <= allowed)) {
         throw new Problem(
@@ -115,6 +114,7 @@ function reportOf(chip: Chip, model: MaskModel, files: MaskReport['files']): Mas
     planes: planes.map(planeReport),
     placed: (wafer?.centres ?? [centre]).map(([x, y]) => [metres(x), metres(y)] as [number, number]),
     files,
+    findings: openingFindings(chip, settings),
     notes: [...planes.flatMap((plane) => plane.notes.map((note) => `${plane.name}: ${note}`)), ...notes],
   };
 }

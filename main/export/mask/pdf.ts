@@ -1,0 +1,149 @@
+import PDFDocument from 'pdfkit';
+import { curve } from '../../../solver/chip/geometry/curve.ts';
+import { inUnit, metres } from '../../../solver/chip/units.ts';
+import type { Edge, Shape } from '../../../solver/mesh/mesh.ts';
+import { Fonts } from '../note/pdf-fonts.ts';
+import { PARTS, shifts } from './cells.ts';
+import { cutArcs } from './compare.ts';
+import { dxfLayer } from './dxf.ts';
+import type { MaskModel, MaskPlane } from './model.ts';
+import { type Page, pageOf } from './page.ts';
+
+/**
+ * Drawings as PDF at true size, one page each: filled paths, dark on clear or clear on dark. A chip is a
+ * form that is set once or, on a wafer, at every place. Arcs are cubic curves of at most PDF_ARC, which
+ * lie within 4e-7 of their radius of the arc. The numbers are millimetres, turned over and scaled by the page.
+ */
+
+export const PDF_ARC = Math.PI / 6;
+/** Points of a page per millimetre: 72 to the inch of 25.4 mm. */
+export const POINTS_PER_MM = 72 / 25.4;
+/** Where there is no lane the outline is a line this wide, mm. */
+const HAIRLINE = 0.02;
+
+/** Millimetres to a tenth of a nanometre. */
+function mm(nm: number): number {
+  const rounded = Number(inUnit(metres(nm), 'mm').toFixed(7));
+  return rounded === 0 ? 0 : rounded;
+}
+
+const WHITE = '1 g 1 G';
+const BLACK = '0 g 0 G';
+
+type Doc = InstanceType<typeof PDFDocument>;
+
+export async function writePdf(model: MaskModel): Promise<Uint8Array> {
+  const doc = new PDFDocument({
+    autoFirstPage: false,
+    margin: 0,
+    // no standard font: every font that is used is embedded
+    font: null as unknown as string,
+    info: {
+      Title: `${model.title}: masks`,
+      Creator: `Channelwright ${model.version}`,
+      Producer: 'Channelwright',
+      CreationDate: model.made,
+    },
+  });
+  const chunks: Buffer[] = [];
+  doc.on('data', (chunk: Buffer) => chunks.push(chunk));
+  const ended = new Promise<void>((done, fail) => {
+    doc.on('end', done);
+    doc.on('error', fail);
+  });
+  const fonts = new Fonts(doc);
+  for (const plane of model.planes) addPage(doc, fonts, model, plane);
+  doc.end();
+  await ended;
+  return new Uint8Array(Buffer.concat(chunks));
+}
+
+function addPage(doc: Doc, fonts: Fonts, model: MaskModel, plane: MaskPlane): void {
+  const page = pageOf(model, plane);
+  const { box, plate, bar } = page;
+  const k = POINTS_PER_MM;
+  const size: [number, number] = [k * mm(box.x1 - box.x0), k * mm(box.y1 - box.y0)];
+  doc.addPage({ size, margin: 0 });
+  const dark = model.settings.polarity === 'dark-field';
+  const form = doc.ref({
+    Type: 'XObject',
+    Subtype: 'Form',
+    FormType: 1,
+    BBox: [-10_000, -10_000, 10_000, 10_000],
+    Resources: {},
+  });
+  form.end(chipContent(model, plane) as unknown as Buffer);
+  const resources = doc.page as unknown as { xobjects: Record<string, unknown> };
+  resources.xobjects.Chip = form;
+  const raw = (text: string): void => {
+    (doc as unknown as { addContent(text: string): void }).addContent(text);
+  };
+  // the page's own matrix has y downward from its upper edge
+  raw(`q ${k} 0 0 ${-k} ${-k * mm(box.x0)} ${k * mm(box.y1)} cm`);
+  raw(dark ? BLACK : WHITE);
+  raw(`${mm(plate.x0)} ${mm(plate.y0)} ${mm(plate.x1 - plate.x0)} ${mm(plate.y1 - plate.y0)} re f`);
+  raw(dark ? WHITE : BLACK);
+  for (const [x, y] of shifts(model)) raw(`q 1 0 0 1 ${mm(x)} ${mm(y)} cm /Chip Do Q`);
+  if (bar) raw(`${BLACK} ${mm(bar.x)} ${mm(bar.y)} ${mm(bar.length)} ${mm(bar.height)} re f`);
+  raw('Q');
+  if (bar) putNotes(doc, fonts, model, plane, page);
+}
+
+function putNotes(doc: Doc, fonts: Fonts, model: MaskModel, plane: MaskPlane, page: Page): void {
+  const { box, bar, lines, letters } = page;
+  const put = (text: string, x: number, y: number): void => {
+    const size = POINTS_PER_MM * mm(letters);
+    fonts.draw(text, 'figure', size, POINTS_PER_MM * mm(x - box.x0), POINTS_PER_MM * mm(box.y1 - y));
+  };
+  doc.fillColor('black');
+  put('10 mm', bar!.x + bar!.length + letters, bar!.y);
+  for (const { text, x, y } of lines) put(text, x, y);
+  // names would be exposed with a layer; on the drawing of holes they tell which is which
+  if (plane.kind !== 'holes') return;
+  doc.fillColor(model.settings.polarity === 'dark-field' ? 'white' : 'black');
+  for (const [dx, dy] of shifts(model)) {
+    for (const { text, x, y } of plane.labels) put(text, x + dx + letters, y + dy + letters);
+  }
+}
+
+function chipContent(model: MaskModel, plane: MaskPlane): string {
+  const out: string[] = [];
+  for (const part of PARTS) {
+    if (plane[part].length === 0) continue;
+    out.push(`/${dxfLayer(plane, part)} BMC`);
+    for (const shape of plane[part]) putPath(out, shape);
+    if (part !== 'outline') out.push('f*');
+    // the lane's inner side is the outline already
+    else out.push(model.settings.lane > 0 ? 'n' : `${HAIRLINE} w S`);
+    out.push('EMC');
+  }
+  return `${out.join('\n')}\n`;
+}
+
+function putPath(out: string[], shape: Shape): void {
+  for (const whole of shape) {
+    const loop = cutArcs(whole, PDF_ARC);
+    out.push(`${mm(loop[0]!.x)} ${mm(loop[0]!.y)} m`);
+    for (let k = 0; k < loop.length; k++) {
+      const last = k + 1 === loop.length;
+      const e = loop[k]!;
+      const next = loop[last ? 0 : k + 1]!;
+      if (e.bulge !== 0) out.push(cubic(e, next));
+      else if (!last) out.push(`${mm(next.x)} ${mm(next.y)} l`);
+    }
+    out.push('h');
+  }
+}
+
+/** The cubic with the arc's tangents at its ends and the arc's own point in its middle. */
+function cubic(e: Edge, next: Edge): string {
+  const c = curve(e.x, e.y, next.x, next.y, e.bulge);
+  const sweep = 4 * Math.atan(e.bulge);
+  const reach = (4 / 3) * Math.tan(sweep / 4) * (1 / c.curvature);
+  const cos = Math.cos(sweep);
+  const sin = Math.sin(sweep);
+  const [vx, vy] = [c.ux * cos - c.uy * sin, c.uy * cos + c.ux * sin];
+  const first = `${mm(e.x + reach * c.ux)} ${mm(e.y + reach * c.uy)}`;
+  const second = `${mm(next.x - reach * vx)} ${mm(next.y - reach * vy)}`;
+  return `${first} ${second} ${mm(next.x)} ${mm(next.y)} c`;
+}
