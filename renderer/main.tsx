@@ -15,6 +15,7 @@ import { App } from './page/app.tsx';
 import { PageContext } from './page/context.tsx';
 import { createSolver, workerThread } from './solving/solver.ts';
 import { createDesk } from './state/desk.ts';
+import { followHand } from './state/live.ts';
 import { createPreferences } from './state/preferences.ts';
 import { createWorkbench } from './state/workbench.ts';
 
@@ -54,6 +55,7 @@ client.on('command', ({ name }) => commands.all.some((command) => command.id ===
 client.on('problem', ({ what, remedy }) => desk.say(`${what} ${remedy}`));
 client.on('closing', ({ says }) => desk.say(says));
 startKeyboard(page);
+followHand(desk, bench);
 
 createRoot(document.getElementById('page')!).render(
   <PageContext value={page}>

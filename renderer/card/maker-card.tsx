@@ -110,9 +110,7 @@ function SplitTreeFields({ name, wishes }: { readonly name: string; readonly wis
         label="Outlets"
         value={String(wishes.levels)}
         choices={Array.from({ length: 7 }, (_, i) => [String(i + 1), String(2 ** (i + 1))] as const)}
-        onAccept={(levels) => {
-          again({ ...wishes, levels: Number(levels) });
-        }}
+        onAccept={(levels) => again({ ...wishes, levels: Number(levels) })}
       />
       <QuantityField
         label="Trunk width"
@@ -128,6 +126,15 @@ function SplitTreeFields({ name, wishes }: { readonly name: string; readonly wis
         unit="um"
         onAccept={(value) => again({ ...wishes, leafWidth: nm(value) })}
       />
+      {wishes.portDiameter !== null && (
+        <QuantityField
+          label="Holes"
+          value={wishes.portDiameter / 1e9}
+          kind="length"
+          unit="um"
+          onAccept={(value) => again({ ...wishes, portDiameter: nm(value) })}
+        />
+      )}
       <ChoiceField
         label="Flow"
         value={wishes.joining ? 'joining' : 'splitting'}
@@ -135,9 +142,7 @@ function SplitTreeFields({ name, wishes }: { readonly name: string; readonly wis
           ['splitting', 'from one to many'],
           ['joining', 'from many to one'],
         ]}
-        onAccept={(way) => {
-          again({ ...wishes, joining: way === 'joining' });
-        }}
+        onAccept={(way) => again({ ...wishes, joining: way === 'joining' })}
       />
       <BoxFields box={wishes.box} onBox={(box) => again({ ...wishes, box })} />
     </section>

@@ -1,5 +1,6 @@
 import type { Drive, Port } from '../../solver/chip/chip.ts';
 import { usePage } from '../page/context.tsx';
+import { useAnswer } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { figure, lengthFigure } from '../words/figure.ts';
 import { PartName } from './part-name.tsx';
@@ -26,7 +27,7 @@ const FIRST: Readonly<Record<Drive['kind'], Drive>> = {
 export function PortCard({ port }: { readonly port: Port }) {
   const { desk } = usePage();
   const chip = useStore(desk.project)!.document.chip;
-  const { result } = useStore(desk.solver.solved);
+  const { result } = useAnswer(desk);
   const solved = result?.ports.find((found) => found.id === port.id);
   const put = (change: Partial<Port>, label: string): string | null =>
     desk.attempt({ label, put: [{ kind: 'port', value: { ...port, ...change } }] });

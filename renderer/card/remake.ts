@@ -7,12 +7,19 @@ import type { Alteration, PartValue } from '../tools/tool.ts';
 export function remade(chip: Chip, name: string, made: Made, label: string): Alteration {
   const there = family(chip, name);
   const ports = new Map(there.ports.map((port) => [port.id, port]));
+  // a hole that was given to one port alone stays its own
+  const common = there.ports[0]?.diameter;
   const put = partsOfMade(made).map((part): PartValue => {
     const old = part.kind === 'port' ? ports.get(part.value.id) : undefined;
     if (part.kind !== 'port' || !old) return part;
     return {
       kind: 'port',
-      value: { ...part.value, drive: old.drive, tubing: old.tubing, diameter: old.diameter },
+      value: {
+        ...old,
+        at: part.value.at,
+        layer: part.value.layer,
+        ...(old.diameter === common && { diameter: part.value.diameter }),
+      },
     };
   });
   const kept = new Set(put.map((part) => `${part.kind}:${part.value.id}`));

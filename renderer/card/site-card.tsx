@@ -1,5 +1,5 @@
 import { usePage } from '../page/context.tsx';
-import { useStore } from '../state/store.ts';
+import { useAnswer } from '../state/live.ts';
 import { placeName } from '../verdict/answer.ts';
 import { capital, counted, figure, lengthFigure } from '../words/figure.ts';
 import { PlaceFindings } from './place-findings.tsx';
@@ -8,7 +8,7 @@ import { Figure } from './text-field.tsx';
 /** A junction or another place that is read from the drawing: what meets there, and what flows. */
 export function SiteCard({ name }: { readonly name: string }) {
   const { desk } = usePage();
-  const { graph, result } = useStore(desk.solver.solved);
+  const { graph, result } = useAnswer(desk);
   const site = graph?.sites.find((found) => found.name === name);
   const cell = result?.cells.find((found) => found.id === name);
   if (!site && !cell) return <p className="soft">{placeName(name)} is not on the chip any more.</p>;

@@ -47,7 +47,7 @@ export function TextField({
   );
 }
 
-/** One of a few, in words. */
+/** One of a few, in words; a refused one is explained beside it and the old one stays. */
 export function ChoiceField<T extends string>({
   label,
   value,
@@ -58,13 +58,25 @@ export function ChoiceField<T extends string>({
   /** '' where what is chosen differs. */
   readonly value: T | '';
   readonly choices: readonly (readonly [T, string])[];
-  readonly onAccept: (value: T) => void;
+  /** A sentence refuses it. */
+  readonly onAccept: (value: T) => unknown;
 }) {
   const id = useId();
+  const [fault, setFault] = useState('');
   return (
     <div className="field">
       <label htmlFor={id}>{label}</label>
-      <select id={id} value={value} onChange={(event) => onAccept(event.target.value as T)}>
+      <select
+        id={id}
+        value={value}
+        aria-invalid={fault !== ''}
+        aria-describedby={fault ? `${id}-fault` : undefined}
+        onChange={(event) => {
+          const why = onAccept(event.target.value as T);
+          setFault(typeof why === 'string' ? why : '');
+        }}
+        onBlur={() => setFault('')}
+      >
         {value === '' && <option value="">they differ</option>}
         {choices.map(([choice, words]) => (
           <option key={choice} value={choice}>
@@ -72,6 +84,11 @@ export function ChoiceField<T extends string>({
           </option>
         ))}
       </select>
+      {fault && (
+        <p className="fault" id={`${id}-fault`} role="alert">
+          {fault}
+        </p>
+      )}
     </div>
   );
 }

@@ -17,6 +17,26 @@ const made = (making: Making): Made => {
 };
 const chipOf = (parts: Made): Chip => ({ ...emptyChip(), ...parts });
 
+test('a splitting tree whose holes would run into one another is refused, with what would do', () => {
+  const wishes = {
+    layer: 'flow',
+    levels: 7,
+    box,
+    trunkWidth: 200_000,
+    leafWidth: 50_000,
+    joining: false,
+    portDiameter: 750_000,
+  };
+  const refused = splitTree.make('tree 1', wishes);
+  expect('refusal' in refused && refused.refusal.replaceAll('\u00a0', ' ')).toContain(
+    'make the box 108.8 mm high',
+  );
+  // 128 holes of 750 µm with 100 µm between them
+  const high = { ...wishes, box: { ...box, bottom: 0, top: 110 * mm } };
+  expect(made(splitTree.make('tree 1', high)).ports).toHaveLength(129);
+  expect('made' in splitTree.make('tree 1', { ...wishes, portDiameter: null })).toBe(true);
+});
+
 describe('serpentine', () => {
   const wishes = {
     layer: 'flow',

@@ -21,6 +21,8 @@ export interface SplitTreeWishes {
 }
 
 export const MOST_LEVELS = 10;
+/** nm, left between the holes of neighbouring outlets. */
+const LEAST_WALL = 100_000;
 
 function widthAt(wishes: SplitTreeWishes, level: number): Nm {
   const share = level / wishes.levels;
@@ -91,6 +93,11 @@ function make(name: string, wishes: SplitTreeWishes): Making {
   if (pitch <= leafWidth)
     return {
       refusal: `The outlets would lie ${lengthFigure(pitch)} apart, closer than they are wide; make the box higher.`,
+    };
+  const { portDiameter } = wishes;
+  if (portDiameter !== null && pitch <= portDiameter + LEAST_WALL)
+    return {
+      refusal: `The holes of the outlets, ${lengthFigure(portDiameter)} wide, would run into one another at ${lengthFigure(pitch)} apart; make the box ${lengthFigure(Math.ceil((portDiameter + LEAST_WALL) * 2 ** levels))} high or more, or the holes smaller.`,
     };
   if ((box.right - box.left) / (levels + 1) <= trunkWidth)
     return { refusal: 'The levels would run into one another; make the box longer.' };

@@ -78,9 +78,7 @@ export function FluidFields({
           ['casson', 'with a yield stress, Casson'],
           ...('table' in fluid ? [['table', 'as measured'] as const] : []),
         ]}
-        onAccept={(choice) => {
-          tried(first(choice, fluid));
-        }}
+        onAccept={(choice) => tried(first(choice, fluid))}
       />
       {'temperature' in fluid && (
         <QuantityField

@@ -39,7 +39,8 @@ export class CellArt {
   draw(ctx: CanvasRenderingContext2D, shown: Shown, camera: Camera, size: Size, palette: Palette): void {
     if (camera.scale < NEAR) return;
     if (shown.overlay !== 'wall shear' && shown.overlay !== 'speed') return;
-    const { result } = this.desk.solver.solved.get();
+    const { solved, live } = this.desk.solver;
+    const { result } = live.get() ?? solved.get();
     if (!result) return;
     if (this.of !== result) {
       this.of = result;

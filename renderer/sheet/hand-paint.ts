@@ -16,6 +16,8 @@ export function paintHand(
   camera: Camera,
   size: Size,
   palette: Palette,
+  /** The chip is drawn as it would be already: what is made is ringed, not filled. */
+  live: boolean,
 ): void {
   const hidden = new Set(preview.hides);
   for (const ref of selection) {
@@ -23,7 +25,9 @@ export function paintHand(
     const part = findPart(chip, ref);
     if (part) paintChosen(ctx, part, camera, size, palette, selection.length === 1);
   }
-  for (const part of preview.parts ?? []) paintPart(ctx, part, camera, size, palette);
+  for (const part of preview.parts ?? [])
+    if (live) paintChosen(ctx, part, camera, size, palette, false);
+    else paintPart(ctx, part, camera, size, palette);
   ctx.setLineDash([]);
   if (preview.guide) {
     const [a, b] = preview.guide.map((p) => toScreen(camera, size, p)) as [

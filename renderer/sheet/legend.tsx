@@ -3,6 +3,7 @@ import { unitInPrint } from '../../solver/chip/units-format.ts';
 import { shades } from '../look/ramp.ts';
 import { onTheme, palette, scheme } from '../look/theme.ts';
 import { usePage } from '../page/context.tsx';
+import { useAnswer } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { figureIn, unitFor } from '../words/figure.ts';
 import { placeOn, shown } from './overlay.ts';
@@ -13,11 +14,11 @@ const WIDTH = 188;
 export function Legend() {
   const { desk } = usePage();
   const overlay = useStore(desk.view, (view) => view.overlay);
-  const solved = useStore(desk.solver.solved);
+  const { chip: solvedChip, result } = useAnswer(desk);
   const chip = useStore(desk.project)!.document.chip;
   const [, again] = useReducer((n: number) => n + 1, 0);
   useEffect(() => onTheme(again), []);
-  const now = useMemo(() => shown(overlay, solved.chip ?? chip, solved.result), [overlay, solved, chip]);
+  const now = useMemo(() => shown(overlay, solvedChip ?? chip, result), [overlay, solvedChip, result, chip]);
   if (now.overlay === 'findings' || now.values.size === 0)
     return (
       <p className="legend soft">

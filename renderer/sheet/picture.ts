@@ -3,6 +3,7 @@ import { boxOfParts, findPart } from '../edits/parts.ts';
 import type { Xy } from '../geometry/vector.ts';
 import { onTheme, palette, scheme } from '../look/theme.ts';
 import type { Desk } from '../state/desk.ts';
+import { shownAnswer } from '../state/live.ts';
 import type { Workbench } from '../state/workbench.ts';
 import { Bodies } from './bodies.ts';
 import { toScreen } from './camera.ts';
@@ -15,6 +16,7 @@ import { type Shown, shown } from './overlay.ts';
 import { createPainter } from './painter.ts';
 import { Room } from './room.ts';
 import { makeScene, type Scene, shadesOf } from './scene.ts';
+import { Spatial } from './spatial.ts';
 import { type PlaceWords, type PortWords, placeWords, portWords } from './words.ts';
 
 /** Derived from chip and result, kept until one of them changes. */
@@ -22,6 +24,9 @@ interface Derived {
   readonly chip: Chip;
   readonly key: readonly unknown[];
   readonly scene: Scene;
+  readonly spatial: Spatial;
+  /** Of what is being dragged. */
+  readonly live: boolean;
   readonly shown: Shown;
   readonly bodies: Bodies;
   readonly ports: readonly PortWords[];
@@ -33,9 +38,12 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
   let derived: Derived | null = null;
 
   const derive = (): Derived | null => {
-    const chip = desk.chip();
-    if (!chip) return null;
-    const solved = desk.solver.solved.get();
+    const open = desk.chip();
+    if (!open) return null;
+    const live = desk.solver.live.get();
+    // what is dragged is drawn as it would be, with what would come of it
+    const solved = shownAnswer(live, desk.solver.solved.get());
+    const chip = live?.chip ?? open;
     const { overlay } = desk.view.get();
     const key = [chip, solved.graph, solved.result, overlay];
     if (derived && key.every((value, i) => value === derived!.key[i])) return derived;
@@ -49,6 +57,8 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       chip,
       key,
       scene,
+      spatial: live ? new Spatial(chip) : desk.spatial(),
+      live: live !== null,
       shown: coloured,
       bodies: new Bodies(scene, shadesOf(scene, coloured)),
       ports: portWords(chip, solved.result),
@@ -80,7 +90,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         ctx.fillStyle = look.sheet;
         ctx.fillRect(0, 0, size.width, size.height);
         drawEdge(ctx, d.chip, camera, size, look);
-        d.bodies.draw(ctx, camera, size, desk.spatial(), {
+        d.bodies.draw(ctx, camera, size, d.spatial, {
           scheme: scheme(),
           palette: look,
           ramp: d.shown.ramp,
@@ -98,12 +108,12 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         }
         drawPlaceWords(ctx, d.places, camera, size, look, room);
         drawPortWords(ctx, d.ports, camera, size, look, room);
-        drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, desk.spatial());
+        drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, d.spatial);
         drawScaleBar(ctx, camera, size, look);
       })(),
     hand: (ctx) =>
       frame((d, { camera, size }) => {
-        paintHand(ctx, d.chip, desk.view.get().selection, bench.preview(), camera, size, palette());
+        paintHand(ctx, d.chip, desk.view.get().selection, bench.preview(), camera, size, palette(), d.live);
       })(),
   });
 
@@ -121,6 +131,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
     }),
     desk.project.subscribe(() => painter.redraw('chip', 'marks', 'hand')),
     desk.solver.solved.subscribe(() => painter.redraw('chip', 'marks')),
+    desk.solver.live.subscribe(() => painter.redraw('chip', 'marks', 'hand')),
     bench.hand.subscribe(() => painter.redraw('hand')),
     onTheme(() => painter.redraw('chip', 'marks', 'hand')),
   ];

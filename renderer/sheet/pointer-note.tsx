@@ -1,8 +1,10 @@
-import { useLayoutEffect, useRef } from 'react';
+import { useLayoutEffect, useMemo, useRef } from 'react';
 import { usePage } from '../page/context.tsx';
+import { useAnswer } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import type { Preview } from '../tools/tool.ts';
 import { toScreen } from './camera.ts';
+import { pointerFigures, pointerSays } from './pointer-figures.ts';
 
 /** What is being made, in figures that can be typed over, beside the pointer. */
 export function PointerNote() {
@@ -12,6 +14,15 @@ export function PointerNote() {
   const chip = useStore(desk.project)!.document.chip;
   const note = useRef<HTMLDivElement>(null);
   const preview = bench.preview();
+  const answer = useAnswer(desk);
+  const figures = useMemo(
+    () => pointerFigures(chip, preview.parts ?? [], answer),
+    [chip, preview.parts, answer],
+  );
+  const says = useMemo(
+    () => (answer.preview ? pointerSays(preview.parts ?? [], answer, desk.solver.solved.get()) : []),
+    [preview.parts, answer, desk],
+  );
   const place = anchor(preview, chip.outline.width);
   useLayoutEffect(() => {
     const element = note.current;
@@ -29,7 +40,7 @@ export function PointerNote() {
     <div ref={note} className="pointer-note">
       {preview.readout && (
         <dl>
-          {preview.readout.map((line) => (
+          {[...preview.readout, ...figures].map((line) => (
             <div key={line.name} className="pair">
               <dt>{line.name}</dt>
               <dd className={line.typing ? 'typing' : undefined}>{line.typing || line.figure}</dd>
@@ -38,6 +49,11 @@ export function PointerNote() {
           ))}
         </dl>
       )}
+      {says.map((sentence) => (
+        <p key={sentence} className="strong-note">
+          {sentence}
+        </p>
+      ))}
       {preview.hint && <p>{preview.hint}</p>}
     </div>
   );

@@ -13,7 +13,7 @@ const THREADS = Math.max(1, Math.min(4, navigator.hardwareConcurrency - 1));
  */
 export function cellHand(): CellHand {
   let queue: { cell: CellSpec; accuracy: Accuracy }[] = [];
-  let listener: (cell: CellSpec, accuracy: Accuracy, found: Found) => void = () => {};
+  let listener: (cell: CellSpec, accuracy: Accuracy, found: Found, left: number) => void = () => {};
   let last = 0;
   const begun = new Map<number, { cell: CellSpec; accuracy: Accuracy }>();
   const idle: Worker[] = [];
@@ -39,7 +39,8 @@ export function cellHand(): CellHand {
       idle.push(worker);
       if (job) {
         const { kind, what, where, remedy } = 'problem' in data ? data.problem : ({} as never);
-        listener(job.cell, job.accuracy, 'problem' in data ? new Problem(kind, what, where, remedy) : data);
+        const found = 'problem' in data ? new Problem(kind, what, where, remedy) : data;
+        listener(job.cell, job.accuracy, found, queue.length + begun.size);
       }
       next();
     });
@@ -47,7 +48,9 @@ export function cellHand(): CellHand {
   }
   return {
     solve(cells, accuracy) {
-      const under = new Set([...begun.values()].map(({ cell }) => cell));
+      const under = new Set(
+        [...begun.values()].filter((job) => job.accuracy.flow <= accuracy.flow).map(({ cell }) => cell),
+      );
       queue = cells.filter((cell) => !under.has(cell)).map((cell) => ({ cell, accuracy }));
       next();
     },

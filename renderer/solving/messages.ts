@@ -12,6 +12,8 @@ import type { SolveOptions } from '../../solver/solve.ts';
 export type Order =
   | { readonly kind: 'load'; readonly id: number; readonly chip: Chip; readonly options: SolveOptions }
   | { readonly kind: 'edit'; readonly id: number; readonly edit: ChipEdit }
+  /** The chip as it would be if the hand let go here; null when it has. */
+  | { readonly kind: 'drag'; readonly id: number; readonly edit: ChipEdit | null }
   /** Solves the chip as it would be and leaves it as it is. */
   | { readonly kind: 'try'; readonly id: number; readonly edit: ChipEdit }
   /** Solves one variant after another and sends each result. */
@@ -57,16 +59,19 @@ export type CellNews = { readonly id: number } & (
   | { readonly problem: Refused & { readonly kind: ProblemKind } }
 );
 
-export type News =
+/** An answer to a chip. */
+export interface Answered {
   /** The drawing as the fluid reads it crosses once: 'same' where it is that of the answer before. */
-  | {
-      readonly kind: 'solved';
-      readonly id: number;
-      readonly graph: Graph | 'same' | null;
-      readonly outcome: Outcome;
-      /** Junctions still being solved, which count as ideal in this answer; another answer follows. */
-      readonly waiting: number;
-    }
+  readonly graph: Graph | 'same' | null;
+  readonly outcome: Outcome;
+  /** Junctions still being solved, which count as ideal in this answer; another answer follows. */
+  readonly waiting: number;
+}
+
+export type News =
+  | ({ readonly kind: 'solved'; readonly id: number } & Answered)
+  /** Of what is being dragged: to preview accuracy, to be looked at and not to be kept. */
+  | ({ readonly kind: 'dragged'; readonly id: number } & Answered)
   /** Whether the project has kept these; 'kept' is to follow, with what was found. */
   | { readonly kind: 'want'; readonly keys: readonly string[] }
   /** A junction was solved, to be kept in the project. */

@@ -32,6 +32,15 @@ const NOTHING: Solved = {
   waiting: 0,
 };
 
+/** What would come of what the hand is about to do: to preview accuracy, for the eye alone. */
+export interface Live {
+  readonly chip: Chip;
+  readonly result: Result | null;
+  readonly problem: Refused | null;
+  readonly graph: Graph | null;
+  readonly waiting: number;
+}
+
 /** A thread as seen from here; a test may put a function in its place. */
 export interface Thread {
   post(order: Order): void;
@@ -41,8 +50,12 @@ export interface Thread {
 
 export interface Solver {
   readonly solved: Store<Solved>;
+  /** Null while nothing is dragged, and until the first answer to it. */
+  readonly live: Store<Live | null>;
   load(chip: Chip, options: SolveOptions): void;
   edit(edit: ChipEdit, chip: Chip): void;
+  /** The chip as it would be, with the edit that would make it; null when the hand has let go. */
+  drag(would: { readonly edit: ChipEdit; readonly chip: Chip } | null): void;
   /** What would come of an edit. */
   attempt(edit: ChipEdit): Promise<Outcome>;
   /** Results of variants, in order as they come; returns how to stop. */
@@ -61,6 +74,10 @@ const NOWHERE: KeptCells = { get: () => Promise.resolve([]), put: () => undefine
 
 export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver {
   const solved = createStore<Solved>(NOTHING);
+  const live = createStore<Live | null>(null);
+  /** Chips as they would be, by number; empty when the hand has let go. */
+  const dragged = new Map<number, Chip>();
+  let graph: Graph | null = null;
   /** Chips asked about and not yet answered, by number. */
   const asked = new Map<number, Chip>();
   const tries = new Map<number, (outcome: Outcome) => void>();
@@ -96,30 +113,41 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
       sweeps.get(news.id)?.(news.index, news.outcome);
       return;
     }
+    // One thread reads one drawing after the other, whichever chip it is of.
+    if (news.graph !== 'same') graph = news.graph;
+    if (news.kind === 'dragged') {
+      const would = dragged.get(news.id);
+      for (const id of dragged.keys()) if (id < news.id) dragged.delete(id);
+      if (would) live.set({ chip: would, graph, waiting: news.waiting, ...told(news.outcome) });
+      return;
+    }
     // The same chip is answered again as its junctions come.
     const chip = asked.get(news.id) ?? (news.id === newest ? solved.get().chip : null);
     if (!chip) return;
     for (const id of [...asked.keys()]) if (id <= news.id) asked.delete(id);
-    const { outcome } = news;
-    const before = solved.get();
+    const busy = news.id !== newest;
     solved.set({
       chip,
-      result: outcome.ok ? outcome.result : null,
-      problem: outcome.ok ? null : outcome.problem,
-      graph: news.graph === 'same' ? before.graph : news.graph,
-      graphChip: news.graph === null ? null : chip,
-      busy: news.id !== newest,
+      ...told(news.outcome),
+      graph,
+      graphChip: graph === null ? null : chip,
+      busy,
       waiting: news.waiting,
     });
+    // what the hand let go of is answered: the preview has had its time
+    if (!busy && dragged.size === 0) live.set(null);
   });
 
   return {
     solved,
+    live,
     load(chip, options) {
       const id = next();
       newest = id;
       asked.clear();
       asked.set(id, chip);
+      dragged.clear();
+      live.set(null);
       solved.set({ ...NOTHING, busy: true });
       thread.post({ kind: 'load', id, chip, options });
     },
@@ -129,6 +157,18 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
       asked.set(id, chip);
       solved.patch({ busy: true });
       thread.post({ kind: 'edit', id, edit });
+    },
+    drag(would) {
+      if (would) {
+        const id = next();
+        dragged.set(id, would.chip);
+        thread.post({ kind: 'drag', id, edit: would.edit });
+      } else if (dragged.size > 0) {
+        dragged.clear();
+        thread.post({ kind: 'drag', id: next(), edit: null });
+        // let go without a change
+        if (!solved.get().busy) live.set(null);
+      }
     },
     attempt(edit) {
       const id = next();
@@ -155,6 +195,9 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
     end: () => thread.end(),
   };
 }
+
+const told = (outcome: Outcome): { readonly result: Result | null; readonly problem: Refused | null } =>
+  outcome.ok ? { result: outcome.result, problem: null } : { result: null, problem: outcome.problem };
 
 /** The real thread. */
 export function workerThread(): Thread {

@@ -1,4 +1,4 @@
-import type { Accuracy, ShapeSolution } from '../../solver/cell/cell.ts';
+import { type Accuracy, PREVIEW_ACCURACY, type ShapeSolution } from '../../solver/cell/cell.ts';
 import type { CellSpec } from '../../solver/cell/cut/spec.ts';
 import { decodeSolution, encodeSolution } from '../../solver/cell/encode.ts';
 import { cellPicture } from '../../solver/cell/picture.ts';
@@ -11,14 +11,17 @@ import { knownSolution, settleWaiting } from '../../solver/lump/cells.ts';
 import { emptyMemory } from '../../solver/memory.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { accuracyOf, type SolveOptions, solve } from '../../solver/solve.ts';
-import type { News, Order, Outcome, PlacedPicture, Refused } from './messages.ts';
+import type { Answered, News, Order, Outcome, PlacedPicture, Refused } from './messages.ts';
 
 /** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
 export interface CellHand {
   solve(cells: readonly CellSpec[], accuracy: Accuracy): void;
   /** `put` the finding into memory, then say so by `listener`. */
-  listen(listener: (cell: CellSpec, accuracy: Accuracy, found: Found) => void): void;
+  /** `left` is how many of the newest list are still to come. */
+  listen(listener: (cell: CellSpec, accuracy: Accuracy, found: Found, left: number) => void): void;
 }
+/** An answer is given anew for a junction that came only after this many times as long as one takes. */
+const PATIENCE = 3;
 /** Keys asked for at once, within what a request may carry. */
 const MOST_WANTED = 256;
 
@@ -28,7 +31,8 @@ export type Found = { readonly key: string; readonly solution: ShapeSolution } |
  * The solving thread's behaviour, without a thread: orders in, news out. Edits that arrive while one is
  * being solved are taken together, so that it is always the newest chip that is answered. With `hand`
  * an answer never waits for junctions: those not known yet count as ideal, and the answer is given
- * again as they come.
+ * again as they come. While something is dragged, the chip as it would be is answered beside it, its
+ * junctions to preview accuracy; nothing of that is kept.
  */
 export function solvingThread(
   tell: (news: News) => void,
@@ -39,17 +43,27 @@ export function solvingThread(
   let chip: Chip | null = null;
   let options: SolveOptions = {};
   let newest = 0;
+  /** The work is asked for; which of the two chips is to be answered. */
+  let asked = false;
   let due = false;
+  let dragDue = false;
+  let drag: { readonly id: number; readonly chip: Chip } | null = null;
   let sent: Graph | null = null;
-  let last: Result | null = null;
+  /** What pictures are drawn of: the chip answered last. */
+  let last: { readonly chip: Chip; readonly result: Result } | null = null;
+  /** The newest chip has no result, whatever its junctions are. */
+  let stuck = false;
+  /** ms: when the last answer was ready, and how long it took. */
+  let ready = 0;
+  let took = 0;
   /** Keys the project was asked for, and answers of it that are still to come. */
   const wanted = new Set<string>();
   let open = 0;
   const cancelled = new Set<number>();
 
-  const outcomeOf = (which: Chip, haste = hand !== null): Outcome => {
+  const outcomeOf = (which: Chip, haste = hand !== null, preview = false): Outcome => {
     try {
-      return { ok: true, result: solve(which, { ...options, haste }, memory) };
+      return { ok: true, result: solve(which, { ...options, haste, preview }, memory) };
     } catch (error) {
       return { ok: false, problem: refused(error) };
     }
@@ -68,42 +82,73 @@ export function solvingThread(
     if (open === 0) hand.solve(waiting, accuracyOf(options));
   };
 
-  const answer = (): void => {
-    due = false;
-    if (!chip) return;
-    const outcome = outcomeOf(chip);
+  /** Solves a chip in haste and sends it; what its junctions still wait for. */
+  const send = (which: Chip, preview: boolean, news: (answer: Answered) => News): readonly CellSpec[] => {
+    const began = performance.now();
+    // a chip that cannot be solved gets no further than the one before it: its junctions are not wanted
+    memory.cells.waiting = [];
+    const outcome = outcomeOf(which, hand !== null, preview);
     let graph: Graph | null = null;
     try {
-      graph = memory.graph(chip);
+      graph = memory.graph(which);
     } catch {
       // the outcome says why there is none
     }
-    last = outcome.ok ? outcome.result : null;
-    const { waiting } = memory.cells;
-    const news = graph && graph === sent ? 'same' : graph;
-    tell({ kind: 'solved', id: newest, graph: news, outcome, waiting: outcome.ok ? waiting.length : 0 });
+    last = outcome.ok ? { chip: which, result: outcome.result } : null;
+    stuck = !outcome.ok;
+    const waiting = outcome.ok ? memory.cells.waiting : [];
+    tell(news({ graph: graph && graph === sent ? 'same' : graph, outcome, waiting: waiting.length }));
     sent = graph;
-    handOn(waiting);
+    ready = performance.now();
+    took = ready - began;
+    return waiting;
   };
-  hand?.listen((cell, accuracy, found) => {
+  const answer = (): void => {
+    asked = false;
+    if (!chip) return;
+    if (due) {
+      due = false;
+      handOn(send(chip, false, (answered) => ({ kind: 'solved', id: newest, ...answered })));
+    }
+    if (!dragDue || !drag) return;
+    dragDue = false;
+    const { id } = drag;
+    hand?.solve(
+      send(drag.chip, true, (answered) => ({ kind: 'dragged', id, ...answered })),
+      PREVIEW_ACCURACY,
+    );
+  };
+  const work = (): void => {
+    if (asked) return;
+    asked = true;
+    later(answer);
+  };
+  const soon = (): void => {
+    due = true;
+    work();
+  };
+  const dragSoon = (): void => {
+    dragDue = true;
+    work();
+  };
+  hand?.listen((cell, accuracy, found, left) => {
     settleWaiting(cell, accuracy, found, memory.cells);
-    if (!(found instanceof Problem)) {
+    if (!(found instanceof Problem) && accuracy.flow <= accuracyOf(options).flow) {
       tell({ kind: 'keep', cell: { key: found.key, bytes: encodeSolution(found.solution) } });
     }
-    soon();
+    if (stuck) return;
+    // answers to a large chip are not given for every single junction, but always for the last
+    if (left > 0 && performance.now() - ready < PATIENCE * took) return;
+    if (drag) dragSoon();
+    else soon();
   });
   const pictureOf = (name: string, lines: number): PlacedPicture | null => {
-    const pressures = last?.cells.find(({ id }) => id === name)?.pressures;
-    if (!chip || !pressures) return null;
-    const spec = memory.cut(chip).cells.find((cell) => cell.name === name);
+    const pressures = last?.result.cells.find(({ id }) => id === name)?.pressures;
+    if (!last || !pressures) return null;
+    const spec = memory.cut(last.chip).cells.find((cell) => cell.name === name);
     const solution = spec && knownSolution(spec, memory.cells);
     const picture = solution && cellPicture(solution, pressures, lines);
     return picture ? { ...picture, origin: spec.origin } : null;
-  };
-  const soon = (): void => {
-    if (due) return;
-    due = true;
-    later(answer);
   };
 
   const sweep = (id: number, variants: readonly Chip[], index: number): void => {
@@ -131,7 +176,25 @@ export function solvingThread(
         options = order.options;
         newest = order.id;
         sent = null;
+        last = null;
+        drag = null;
         return soon();
+      case 'drag': {
+        if (!chip) return;
+        if (order.edit) {
+          try {
+            drag = { id: order.id, chip: applyEdit(chip, order.edit) };
+            dragSoon();
+          } catch {
+            // there it could not stay: the answer before it stands
+          }
+          return;
+        }
+        if (!drag) return;
+        drag = null;
+        // junctions that came meanwhile were not put into the chip's own answer
+        return soon();
+      }
       case 'edit':
         if (!chip) return;
         chip = applyEdit(chip, order.edit);

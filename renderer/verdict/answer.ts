@@ -11,6 +11,8 @@ export interface Evidence {
   readonly trouble: string;
   /** Junctions still being solved; they count as ideal meanwhile. */
   readonly waiting?: number;
+  /** Of something that is being dragged: junctions are solved to preview accuracy alone. */
+  readonly preview?: boolean;
 }
 
 /**
@@ -64,14 +66,17 @@ export function unsolved(question: string, { chip, trouble }: Evidence): Answer 
   return { question, standing: 'unknown', says: [says], margin: null, culprit: null };
 }
 
-/** A name as people say it: "junction 3" of "junction:3", "channel feed" of "feed#1". */
+/** Words that a sentence would swallow as its own: "at in" is said as "at port in". */
+const LITTLE = /^(in|out|to|at|of|on|up|down|left|right|top|end|a|b|[0-9]+)$/i;
+
+/** A name as people say it: "junction 3" of "junction:3", "well 1" of "port:well 1", "feed" of "feed#1". */
 export function placeName(where: string): string {
   if (where === '') return 'the chip';
   const colon = where.indexOf(':');
   if (colon > 0) {
     const kind = where.slice(0, colon);
     const id = where.slice(colon + 1);
-    return kind === 'port' || kind === 'chamber' ? id : `${kind} ${id}`;
+    return (kind === 'port' || kind === 'chamber') && !LITTLE.test(id) ? id : `${kind} ${id}`;
   }
   return where.replace(/#\d+$/, '');
 }

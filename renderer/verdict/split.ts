@@ -1,11 +1,12 @@
 import type { TargetResult } from '../../solver/chip/result.ts';
 import type { Ref } from '../state/ref.ts';
 import { count, counted, figure } from '../words/figure.ts';
-import { type Answer, type Evidence, type Margin, type Run, strong, unsolved } from './answer.ts';
+import { type Answer, type Evidence, type Margin, placeName, type Run, strong, unsolved } from './answer.ts';
 
 const QUESTION = 'Does it split right?';
 
-const nameOf = (target: TargetResult): string => target.port ?? target.channel ?? '';
+const nameOf = (target: TargetResult): string =>
+  target.port === undefined ? (target.channel ?? '') : placeName(`port:${target.port}`);
 const refOf = (target: TargetResult): Ref =>
   target.port !== undefined ? `port:${target.port}` : `channel:${target.channel}`;
 const offOf = (target: TargetResult): number =>
@@ -70,7 +71,9 @@ export function splitAnswer(evidence: Evidence): Answer {
 
 /** "wells" where all names are one word and a number, else "outlets" or "targets". */
 function noun(targets: readonly TargetResult[]): string {
-  const stems = new Set(targets.map((target) => /^(\p{L}{2,12})[\s_-]*\d+$/u.exec(nameOf(target))?.[1]));
+  const stems = new Set(
+    targets.map((target) => /^(\p{L}{2,12})[\s_-]*\d+$/u.exec(target.port ?? target.channel ?? '')?.[1]),
+  );
   const [stem] = stems;
   if (stems.size === 1 && stem && !['in', 'out', 'port'].includes(stem)) return `${stem}s`;
   return targets.every((target) => target.port !== undefined) ? 'outlets' : 'targets';

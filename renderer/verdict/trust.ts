@@ -1,7 +1,8 @@
+import { PREVIEW_ACCURACY } from '../../solver/cell/cell.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import { capital, counted, figure, number } from '../words/figure.ts';
 import { type Answer, type Evidence, placeRef, strong, unsolved } from './answer.ts';
-import { BUILD_KINDS } from './finding-kinds.ts';
+import { BUILD_KINDS, PUMP_KINDS } from './finding-kinds.ts';
 
 const QUESTION = 'Can I trust it?';
 
@@ -32,14 +33,29 @@ export function trustAnswer(evidence: Evidence): Answer {
   const error = bands?.share ?? statedError(result);
   const reynolds = highestReynolds(result);
   const doubts = result.findings.filter(
-    ({ kind, severity, accepted }) => severity !== 'note' && accepted === undefined && !BUILD_KINDS.has(kind),
+    ({ kind, severity, accepted }) =>
+      severity !== 'note' && accepted === undefined && !BUILD_KINDS.has(kind) && !PUMP_KINDS.has(kind),
   );
   const flow: string = reynolds
     ? `Re at most ${number(reynolds.value, reynolds.value < 0.1 ? 1 : 2)}.`
     : 'nothing flows.';
   const culprit = doubts[0] ? placeRef(doubts[0].where, chip) : reynolds && placeRef(reynolds.where, chip);
   const solved = result.cells.filter((cell) => cell.accuracy < 1).length;
-  const { waiting = 0 } = evidence;
+  const { waiting = 0, preview = false } = evidence;
+  if (preview)
+    return {
+      question: QUESTION,
+      standing: 'unknown',
+      says: [
+        waiting > 0
+          ? 'Roughly, while it is dragged: some junctions are still ideal. '
+          : 'Roughly, while it is dragged: junctions are solved within ',
+        ...(waiting > 0 ? [] : [strong(percent(PREVIEW_ACCURACY.flow)), '. ']),
+        capital(flow),
+      ],
+      margin: null,
+      culprit: null,
+    };
   const [first] = doubts;
   if (first)
     return {

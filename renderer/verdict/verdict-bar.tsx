@@ -1,5 +1,6 @@
 import { useEffect, useMemo, useRef, useState } from 'react';
 import { usePage } from '../page/context.tsx';
+import { useAnswer } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { type Answer, plainText } from './answer.ts';
 import { MarginGraph } from './margin.tsx';
@@ -9,8 +10,9 @@ import { verdicts } from './verdicts.ts';
 export function VerdictBar() {
   const { desk, commands } = usePage();
   const project = useStore(desk.project)!;
-  const solved = useStore(desk.solver.solved);
+  const solved = useAnswer(desk);
   const { chip } = project.document;
+  const busy = solved.busy || solved.waiting > 0;
   const answers = useMemo(
     () =>
       verdicts({
@@ -18,15 +20,21 @@ export function VerdictBar() {
         result: solved.result,
         trouble: solved.problem ? `${solved.problem.what} ${solved.problem.remedy}` : '',
         waiting: solved.waiting,
+        preview: solved.preview,
       }),
-    [chip, solved.chip, solved.result, solved.problem, solved.waiting],
+    [chip, solved.chip, solved.result, solved.problem, solved.waiting, solved.preview],
   );
   return (
-    <section className="verdicts" aria-label="The five answers" aria-busy={solved.busy || solved.waiting > 0}>
+    <section
+      className="verdicts"
+      aria-label="The five answers"
+      aria-busy={busy}
+      data-preview={solved.preview || undefined}
+    >
       {answers.map((answer) => (
         <Verdict key={answer.question} answer={answer} onCulprit={(ref) => commands.show(ref)} />
       ))}
-      <Announcement answers={answers} busy={solved.busy || solved.waiting > 0} />
+      <Announcement answers={answers} busy={busy} />
     </section>
   );
 }

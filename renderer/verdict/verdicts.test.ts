@@ -150,7 +150,7 @@ describe('Can the pump drive it?', () => {
   test('no pump given is not yes', () => {
     const answer = ask('pump', teeChip(), resultOf());
     expect(answer).toMatchObject({ standing: 'not asked', culprit: 'port:in' });
-    expect(text(answer)).toBe('It needs 31.2 kPa at in; no pump is given.');
+    expect(text(answer)).toBe('It needs 31.2 kPa at port in; no pump is given.');
   });
   test('sucking is said', () => {
     const ports = [
@@ -158,7 +158,50 @@ describe('Can the pump drive it?', () => {
       { id: 'well 1', pressure: -2000, flow: -1, share: 1 },
     ];
     expect(text(ask('pump', teeChip(), resultOf({ ports })))).toBe(
-      'It needs 2.00 kPa from in to well 1, which sucks; no pump is given.',
+      'It needs 2.00 kPa from port in to well 1, which sucks; no pump is given.',
+    );
+  });
+  test('a pump that can, and one that cannot', () => {
+    const pumped = {
+      port: 'in',
+      pressure: 31_200,
+      flow: 1e-8 / 60,
+      ratedPressure: 100_000,
+      runTime: null,
+      met: true,
+    };
+    const yes = ask('pump', teeChip(), resultOf({ pumps: [pumped] }));
+    expect(yes).toMatchObject({ standing: 'yes', margin: { kind: 'bar', over: false } });
+    expect(text(yes)).toBe('Yes: port in needs 31.2 kPa of the 100 kPa its pump can give.');
+    const weak = { ...pumped, ratedPressure: 20_000, met: false };
+    const finding = {
+      kind: 'pump-pressure',
+      severity: 'stop',
+      where: 'port:in',
+      says: 'The pump at in must hold 31.2 kPa, tubing included; it can do 20.0 kPa.',
+      do: 'Widen.',
+    } as const;
+    const no = ask('pump', teeChip(), resultOf({ pumps: [weak], findings: [finding] }));
+    expect(no).toMatchObject({ standing: 'no', culprit: 'port:in', margin: { over: true } });
+    expect(text(no)).toContain('No: The pump at in must hold 31.2 kPa');
+    // what the pump cannot do is no doubt about the numbers
+    expect(ask('trust', teeChip(), resultOf({ findings: [finding] })).standing).toBe('yes');
+  });
+  test('a flow within its rate, and what runs out', () => {
+    const moved = {
+      port: 'in',
+      pressure: 100,
+      flow: 1e-8 / 60,
+      ratedFlow: 1e-7 / 60,
+      runTime: null,
+      met: true,
+    };
+    expect(text(ask('pump', teeChip(), resultOf({ pumps: [moved] })))).toBe(
+      'Yes: port in needs 10.0 µL/min of the 100 µL/min its pump can give.',
+    );
+    const { ratedFlow: _, ...held } = { ...moved, runTime: 600 };
+    expect(text(ask('pump', teeChip(), resultOf({ pumps: [held] })))).toBe(
+      'Yes: what port in holds lasts 10.0 min.',
     );
   });
   test('nothing drives', () =>
@@ -254,6 +297,16 @@ describe('Can I trust it?', () => {
     });
     expect(text(ask('trust', teeChip(), still))).toContain('nothing flows.');
   });
+  test('what is dragged is roughly so', () => {
+    const say = (waiting: number) =>
+      plainText(
+        verdicts({ chip: teeChip(), result: resultOf(), trouble: '', waiting, preview: true })[4]!.says,
+      );
+    expect(say(0).replaceAll('\u00a0', ' ')).toBe(
+      'Roughly, while it is dragged: junctions are solved within 3.0 %. Re at most 1.2.',
+    );
+    expect(say(2)).toContain('some junctions are still ideal');
+  });
   test('a doubt is told first', () => {
     const doubt = {
       kind: 'inertia',
@@ -271,7 +324,7 @@ describe('Can I trust it?', () => {
 test('places by name and reference', () => {
   expect(['', 'port:in', 'junction:3', 'feed#2', 'chamber:well'].map(placeName)).toEqual([
     'the chip',
-    'in',
+    'port in',
     'junction 3',
     'feed',
     'well',

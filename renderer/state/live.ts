@@ -1,0 +1,71 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import { type ChipEdit, makeEdit } from '../../solver/chip/edit.ts';
+import { Problem } from '../../solver/problem/problem.ts';
+import { toEdit } from '../edits/to-edit.ts';
+import { tidy } from '../geometry/path.ts';
+import type { Live, Solved } from '../solving/solver.ts';
+import { freshId, type PartValue } from '../tools/tool.ts';
+import type { Desk } from './desk.ts';
+import { useStore } from './store.ts';
+import type { Workbench } from './workbench.ts';
+
+/** Beyond this many channels the answer would come too late to be one to what the hand does. */
+const MOST_CHANNELS = 5000;
+
+/** The chip as it would be with what a tool shows, and the edit that would make it; null where it makes none. */
+export function wouldBe(
+  chip: Chip,
+  parts: readonly PartValue[],
+): { readonly edit: ChipEdit; readonly chip: Chip } | null {
+  if (parts.length === 0 || chip.channels.length > MOST_CHANNELS) return null;
+  const put = parts.map((part): PartValue => {
+    if (part.kind !== 'channel') return part;
+    const path = tidy(part.value.path) as typeof part.value.path;
+    return { kind: 'channel', value: { ...part.value, id: partId(chip, part), path } };
+  });
+  try {
+    const edit = toEdit(chip, { label: 'as it would be', put });
+    return { edit, chip: makeEdit(chip, edit).chip };
+  } catch (error) {
+    // there it could not stay; the hand goes on
+    if (error instanceof Problem) return null;
+    throw error;
+  }
+}
+
+/** The id of a part as it would be: one that is drawn has none yet. */
+export const partId = (chip: Chip, part: PartValue): string =>
+  part.value.id === '' ? freshId(chip, part.kind) : part.value.id;
+
+/** Once a frame, asks what would come of what the hand is about to do. */
+export function followHand(desk: Desk, bench: Workbench): () => void {
+  let due = false;
+  const ask = (): void => {
+    due = false;
+    const chip = desk.chip();
+    desk.solver.drag(chip && wouldBe(chip, bench.preview().parts ?? []));
+  };
+  return bench.hand.subscribe(() => {
+    if (due) return;
+    due = true;
+    requestAnimationFrame(ask);
+  });
+}
+
+/** What is shown as the answer: that to what is dragged while something is, else the newest. */
+export interface Answer extends Omit<Live, 'chip'> {
+  readonly chip: Chip | null;
+  readonly graphChip: Chip | null;
+  readonly busy: boolean;
+  /** To preview accuracy, for the eye alone. */
+  readonly preview: boolean;
+}
+
+export const shownAnswer = (live: Live | null, solved: Solved): Answer =>
+  live
+    ? { ...live, graphChip: live.graph && live.chip, busy: true, preview: true }
+    : { ...solved, preview: false };
+
+export function useAnswer(desk: Desk): Answer {
+  return shownAnswer(useStore(desk.solver.live), useStore(desk.solver.solved));
+}
