@@ -141,8 +141,8 @@ function extend(stretch: Stretch, end: StretchEnd, s: number, at: Place, after: 
 export function interpolate(stretch: Stretch, values: readonly number[], at: number): number {
   const { s } = stretch;
   const count = Math.min(4, s.length);
-  let k = 0;
-  while (k + count < s.length && s[k + Math.floor(count / 2)] < at) k += 1;
+  const half = Math.floor(count / 2);
+  const k = Math.max(0, Math.min(s.length - count, firstFrom(s, at) - half));
   let sum = 0;
   for (let i = k; i < k + count; i += 1) {
     let weight = values[i];
@@ -157,7 +157,17 @@ function placeAt(stretch: Stretch, at: number): Place {
 }
 
 function doubtAt(stretch: Stretch, at: number): number {
-  let k = 0;
-  while (k + 2 < stretch.s.length && stretch.s[k + 1] < at) k += 1;
+  const k = Math.max(0, Math.min(stretch.s.length - 2, firstFrom(stretch.s, at) - 1));
   return Math.max(Math.abs(stretch.doubt[k]), Math.abs(stretch.doubt[k + 1]));
+}
+
+/** Index of the first of ascending values that is not below `at`; their number where all are. */
+function firstFrom(s: readonly number[], at: number): number {
+  let [low, high] = [0, s.length];
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (s[middle] < at) low = middle + 1;
+    else high = middle;
+  }
+  return low;
 }
