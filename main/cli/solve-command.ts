@@ -10,7 +10,7 @@ import { allMet, reportText } from './report.ts';
 import { type Io, problemOf, problemText } from './say.ts';
 
 /** The path that a file has, or will have, whatever links lead to it. */
-async function placeOf(path: string): Promise<string> {
+export async function placeOf(path: string): Promise<string> {
   const whole = resolve(path);
   return await realpath(whole).catch(async () => {
     const folder = await realpath(dirname(whole)).catch(() => dirname(whole));

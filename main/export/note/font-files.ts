@@ -1,0 +1,57 @@
+import { readFileSync } from 'node:fs';
+import { createRequire } from 'node:module';
+import { dirname, join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+
+/** The typefaces of the note, by the files that come with the program. */
+
+/** Faces as they are asked for. */
+export const FACES = ['text', 'text strong', 'figure', 'figure strong'] as const;
+export type Face = (typeof FACES)[number];
+
+const PACKAGES = {
+  literata: '@fontsource/literata',
+  commissioner: '@fontsource/commissioner',
+  dejavu: 'dejavu-fonts-ttf',
+} as const;
+
+export interface FontFile {
+  readonly from: keyof typeof PACKAGES;
+  readonly file: string;
+}
+
+const own = (from: 'literata' | 'commissioner', weight: number): FontFile[] =>
+  (from === 'literata'
+    ? ['latin', 'latin-ext', 'greek', 'cyrillic']
+    : ['latin', 'latin-ext', 'greek', 'cyrillic']
+  ).map((script) => ({ from, file: `${from}-${script}-${weight}-normal.woff` }));
+
+const fallback = (file: string): FontFile => ({ from: 'dejavu', file });
+
+/** For each face, the files that are asked for a sign, one after another. */
+export const CHAINS: Readonly<Record<Face, readonly FontFile[]>> = {
+  text: [...own('literata', 400), fallback('DejaVuSans.ttf')],
+  'text strong': [...own('literata', 600), fallback('DejaVuSans-Bold.ttf')],
+  figure: [...own('commissioner', 400), fallback('DejaVuSans.ttf')],
+  'figure strong': [...own('commissioner', 600), fallback('DejaVuSans-Bold.ttf')],
+};
+
+/** Bundled, the files lie in a folder beside the program; else in their packages. */
+function pathOf({ from, file }: FontFile): string {
+  if (!import.meta.url.endsWith('.ts')) return fileURLToPath(new URL(`./fonts/${file}`, import.meta.url));
+  const require = createRequire(import.meta.url);
+  return from === 'dejavu'
+    ? require.resolve(`${PACKAGES.dejavu}/ttf/${file}`)
+    : join(dirname(require.resolve(PACKAGES[from])), 'files', file);
+}
+
+const read = new Map<string, Uint8Array>();
+
+export function fontBytes(font: FontFile): Uint8Array {
+  let bytes = read.get(font.file);
+  if (!bytes) {
+    bytes = readFileSync(pathOf(font));
+    read.set(font.file, bytes);
+  }
+  return bytes;
+}
