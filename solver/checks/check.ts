@@ -2,8 +2,11 @@ import type { Finding } from '../problem/finding.ts';
 import type { Evidence } from './evidence.ts';
 import { byGravity, Gathered } from './gather.ts';
 import { checkHoles } from './holes.ts';
+import { checkLayers } from './layers.ts';
+import { checkNecks } from './necks.ts';
 import { checkOutline } from './outline.ts';
 import { rulesOf } from './process.ts';
+import { checkSettling } from './settling.ts';
 import { checkShapes } from './shapes.ts';
 import { checkTrust } from './trust.ts';
 import { checkWalls } from './walls.ts';
@@ -20,9 +23,12 @@ export function checkFindings(evidence: Evidence): Finding[] {
   const found = new Gathered();
   checkOutline(drawn, found);
   checkWidths(drawn, found);
+  checkNecks(drawn, found);
   checkWalls(drawn, found);
+  checkLayers(drawn, found);
   checkHoles(drawn, found);
   checkShapes(drawn, found);
   checkTrust(evidence, rules, found);
+  checkSettling(evidence, rules, found);
   return byGravity(found.list());
 }

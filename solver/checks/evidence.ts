@@ -1,6 +1,6 @@
 import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
-import type { CellResult, PieceResult, PortResult } from '../chip/result.ts';
+import type { PieceResult, PortResult } from '../chip/result.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { ProcessRules } from './process.ts';
 
@@ -21,6 +21,16 @@ export interface StretchEvidence {
   readonly area: number;
 }
 
+/** One solved junction, bend or chamber. */
+export interface CellEvidence {
+  readonly id: string;
+  /** m */
+  readonly at: readonly [number, number];
+  /** Bound of the relative error of its port matrix: that of the shape solved, and what comes of solving it with upright walls. */
+  readonly accuracy: number;
+  readonly upright: number;
+}
+
 /** What the checks are made from: the chip, how the fluid reads it, and what was solved. */
 export interface Evidence {
   readonly chip: Chip;
@@ -28,7 +38,9 @@ export interface Evidence {
   readonly fluid: Fluid;
   readonly stretches: readonly StretchEvidence[];
   readonly ports: readonly PortResult[];
-  readonly cells: readonly CellResult[];
+  readonly cells: readonly CellEvidence[];
+  /** Relative accuracy that was asked of flows through junctions. */
+  readonly asked: number;
 }
 
 /** What the drawing alone is checked by. */

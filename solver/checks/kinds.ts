@@ -1,7 +1,7 @@
 /** Every kind of finding: what it answers, how its number is made, what it is held against, and whose rule that is. */
 export interface KindOfFinding {
-  /** The question that it bears on. */
-  readonly of: 'made' | 'trust';
+  /** The question that it bears on: does it split right, do cells survive, can the pump drive it, can it be made, can it be trusted. */
+  readonly of: 'split' | 'cells' | 'pump' | 'made' | 'trust';
   readonly title: string;
   readonly formula: string;
   readonly threshold: string;
@@ -25,6 +25,20 @@ export const FINDING_KINDS = {
     of: 'made',
     title: 'Wall too thin to make',
     formula: 'thickness of the wall as drawn, less what an etch takes from both sides',
+    threshold: 'least wall of the process',
+    source: RULE,
+  },
+  'chamber-neck': {
+    of: 'made',
+    title: 'Chamber too narrow to make',
+    formula: 'least distance inside a chamber between sides that face each other to within 60°',
+    threshold: 'least width of the process',
+    source: RULE,
+  },
+  'layer-wall': {
+    of: 'made',
+    title: 'Wall between layers too thin',
+    formula: 'thickness of a layer’s roof where a channel of the next layer passes over its own',
     threshold: 'least wall of the process',
     source: RULE,
   },
@@ -180,10 +194,35 @@ export const FINDING_KINDS = {
   },
   'cell-accuracy': {
     of: 'trust',
-    title: 'Junction less exact than usual',
+    title: 'Junction less exact than asked',
     formula: 'bound of the relative error of the junction’s port matrix',
-    threshold: '0.02',
-    source: 'what the solver knows of its own error; four times what it is asked for',
+    threshold: '1.5 × the accuracy asked',
+    source: 'what the solver knows of its own error',
+  },
+  'upright-walls': {
+    of: 'trust',
+    title: 'Junction solved with upright walls',
+    formula:
+      '0.003 + 0.03 × how far a side wall leans over the narrowest width, and what is left between arms of different widths; twice that for profiles that were not measured',
+    threshold: '0.01',
+    source:
+      'solves in tetrahedra of bends and tees with leaning and etched walls; threshold common practice, no source',
+  },
+  temperature: {
+    of: 'trust',
+    title: 'Temperature out of the usual',
+    formula: 'temperature of the fluid',
+    threshold: '4 to 50 °C',
+    source: 'survey of operating windows quoted in a trade article on test protocols',
+  },
+  settling: {
+    of: 'trust',
+    title: 'Soft walls settle slowly',
+    formula:
+      '3 C p/Q over the assay: C the volume that soft roofs give per pressure, p the largest pressure, Q the flow through',
+    threshold: '0.1; a half is a warning',
+    source:
+      'rise of roofs: Gervais et al. 2006, Lab Chip 6, 500; Christov et al. 2018, J. Fluid Mech. 841, 267 (from memory); threshold common practice, no source',
   },
   'blood-narrow': {
     of: 'trust',
@@ -213,6 +252,161 @@ export const FINDING_KINDS = {
     formula: 'junctions not solved',
     threshold: '0',
     source: 'one pressure at the crossing of centrelines is an approximation',
+  },
+  'sharp-corner': {
+    of: 'trust',
+    title: 'Corner without a radius',
+    formula: 'fillet radius of the layer at re-entrant corners of junctions',
+    threshold: 'above 0',
+    source: 'wall shear grows without bound at a sharp re-entrant corner: Moffatt 1964, J. Fluid Mech. 18, 1',
+  },
+  'thinning-junction': {
+    of: 'trust',
+    title: 'Thinning fluid in a solved junction',
+    formula: 'whether the fluid thins with shear',
+    threshold: 'it does not',
+    source: 'junctions are solved with one viscosity each',
+  },
+  'cell-ideal': {
+    of: 'trust',
+    title: 'Junction that could not be solved',
+    formula: 'junctions left ideal, and why',
+    threshold: '0',
+    source: 'one pressure at the crossing of centrelines is an approximation',
+  },
+  unconnected: {
+    of: 'split',
+    title: 'Nothing drives it',
+    formula: 'driven ports of the cavity',
+    threshold: '1',
+    source: 'geometry',
+  },
+  'at-rest': {
+    of: 'split',
+    title: 'Nothing moves it',
+    formula: 'greatest less least pressure that drives the cavity',
+    threshold: 'above 0',
+    source: 'one pressure everywhere drives nothing',
+  },
+  'no-flow': {
+    of: 'split',
+    title: 'Held still by its yield stress',
+    formula: 'wall shear that the drives can make, against the yield stress of the fluid',
+    threshold: 'the yield stress',
+    source: 'Casson 1959 (from memory)',
+  },
+  'streams-meet': {
+    of: 'cells',
+    title: 'Streams meet and part again',
+    formula: 'outlets fed by the same two inlets or more',
+    threshold: '1',
+    source: 'routes are reckoned as if streams mixed fully where they meet',
+  },
+  'routes-summed': {
+    of: 'cells',
+    title: 'More routes than are listed',
+    formula: 'routes from inlets to outlets',
+    threshold: '5000',
+    source: 'those that carry most are listed',
+  },
+  'cell-too-large': {
+    of: 'cells',
+    title: 'Cell larger than the channel',
+    formula: 'diameter of the cell',
+    threshold: 'what is open for it',
+    source: 'geometry',
+  },
+  'limit-not-judged': {
+    of: 'cells',
+    title: 'Limit left open',
+    formula: 'whether what the limit holds for is known',
+    threshold: 'it is',
+    source: 'a limit is never met for want of knowledge',
+  },
+  'law-mixed': {
+    of: 'cells',
+    title: 'Constants of two laws',
+    formula: 'constant and exponents against those of the published laws',
+    threshold: 'all three of one law',
+    source:
+      'Giersiepen et al. 1990, Int. J. Artif. Organs 13, 300; Heuser and Opitz 1980, Biorheology 17, 17',
+  },
+  'law-range': {
+    of: 'cells',
+    title: 'Law beyond its data',
+    formula: 'largest stress and total time on the route',
+    threshold: 'the largest stress and time of the law’s own data',
+    source: 'the law’s own source',
+  },
+  'loop-passes': {
+    of: 'cells',
+    title: 'More passes than counted',
+    formula: 'assay over the time of one round of the loop, its tubing included',
+    threshold: 'passes of the limit',
+    source: 'residence time of the loop itself',
+  },
+  'pump-pressure': {
+    of: 'pump',
+    title: 'Pump too weak',
+    formula: 'pressure at the pump, tubing included',
+    threshold: 'what it can do',
+    source: 'the user’s number',
+  },
+  'pump-flow': {
+    of: 'pump',
+    title: 'Pump too small',
+    formula: 'flow at the port',
+    threshold: 'what the pump can do',
+    source: 'the user’s number',
+  },
+  'runs-out': {
+    of: 'pump',
+    title: 'Runs out before the assay ends',
+    formula: 'volume over flow',
+    threshold: 'length of the assay',
+    source: 'the user’s numbers',
+  },
+  'runs-dry': {
+    of: 'pump',
+    title: 'Reservoir runs dry',
+    formula: 'what is drawn over the assay as its level falls',
+    threshold: 'what is in it',
+    source: 'the user’s numbers',
+  },
+  burst: {
+    of: 'pump',
+    title: 'Beyond the rated pressure',
+    formula: 'largest pressure in chip, ports and pumps',
+    threshold: 'rating of chip and fittings',
+    source: 'the user’s number',
+  },
+  'end-extended': {
+    of: 'split',
+    title: 'End taken on to a centreline',
+    formula: 'distance of a channel’s end from the centreline that it lies beside',
+    threshold: '0',
+    source: 'what overlaps is one cavity',
+  },
+  'overlap-alongside': {
+    of: 'split',
+    title: 'Overlap side by side',
+    formula: 'length over which two channels overlap without crossing',
+    threshold: '0',
+    source: 'what overlaps is one cavity',
+  },
+  'bend-reduced': {
+    of: 'split',
+    title: 'Bend tighter than asked',
+    formula: 'bend radius as asked',
+    threshold: 'what fits between neighbouring vertices',
+    source: 'geometry',
+  },
+  'same-line': {
+    of: 'split',
+    title: 'Drawn twice',
+    formula: 'length of channels on one line',
+    threshold: '0',
+    source: 'what overlaps is one cavity',
   },
   'unresolved-flow': {
     of: 'trust',

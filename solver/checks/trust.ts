@@ -9,7 +9,10 @@ import { digits, length, METRE, percent, placeOf } from './words.ts';
 const TURBULENT = 2000;
 const DEVELOPING = 0.1;
 const FLAT = 20;
-const LOOSE = 0.02;
+const LOOSE = 1.5;
+const UPRIGHT = 0.01;
+/** Usual operating window, K. */
+const WINDOW = [277.15, 323.15] as const;
 const BLOOD = 0.3e-3;
 const SOFT = 0.05;
 /** What the solved numbers leave out, for every stretch, junction and the chip. */
@@ -50,21 +53,60 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
     if (rules?.modulus && !layer.roof) softRoof(stretch, layer, rules, add);
   }
   flatChannels(evidence, found);
-  for (const cell of evidence.cells) {
-    if (cell.accuracy <= LOOSE || cell.accuracy >= 1) continue;
-    found.add({
-      kind: 'cell-accuracy',
-      severity: cell.accuracy > 5 * LOOSE ? 'warn' : 'note',
-      where: cell.id,
-      at: cell.at,
-      says: `${cell.id} is solved to ${percent(cell.accuracy)}; ${percent(LOOSE)} is usual.`,
-      do: 'Ask for more accuracy, or take it for the error of the split there.',
-      value: cell.accuracy,
-      threshold: LOOSE,
-      error: cell.accuracy,
-      off: cell.accuracy / LOOSE,
-    });
+  junctions(evidence, found);
+  temperature(evidence, found);
+}
+
+/** Junctions solved less exactly than was asked, or with upright walls in place of their own. */
+function junctions({ cells, asked }: Evidence, found: Gathered): void {
+  for (const { id, at, accuracy, upright } of cells) {
+    if (accuracy > LOOSE * asked) {
+      found.add({
+        kind: 'cell-accuracy',
+        severity: accuracy > 5 * LOOSE * asked ? 'warn' : 'note',
+        where: id,
+        at,
+        says: `${id} is solved to ${percent(accuracy)}; ${percent(asked)} was asked.`,
+        do: 'Take that for the error of the split there, or simplify the shape: memory or rounds ran out.',
+        value: accuracy,
+        threshold: LOOSE * asked,
+        error: accuracy,
+        off: accuracy / (LOOSE * asked),
+      });
+    }
+    if (upright > UPRIGHT) {
+      found.add({
+        kind: 'upright-walls',
+        severity: upright > 5 * UPRIGHT ? 'warn' : 'note',
+        where: id,
+        at,
+        says: `${id} is solved with upright walls of the same area in place of its layer's own: its flows may be ${percent(upright)} off, and its peak shear is not given.`,
+        do: 'Take that for the error of the split there, or make the layer shallower for its width.',
+        value: upright,
+        threshold: UPRIGHT,
+        error: upright,
+        off: upright / UPRIGHT,
+      });
+    }
   }
+}
+
+function temperature({ chip }: Evidence, found: Gathered): void {
+  if (!('temperature' in chip.fluid)) return;
+  const { temperature: kelvin } = chip.fluid;
+  const bound = kelvin < WINDOW[0] ? WINDOW[0] : WINDOW[1];
+  if (kelvin >= WINDOW[0] && kelvin <= WINDOW[1]) return;
+  const celsius = (value: number): string => `${digits(value - 273.15, 3)} °C`;
+  found.add({
+    kind: 'temperature',
+    severity: 'note',
+    where: '',
+    says: `The fluid is at ${celsius(kelvin)}; chips, bonds and fittings are usually run at ${celsius(WINDOW[0])} to ${celsius(WINDOW[1])}.`,
+    do: 'See that chip, bond and fittings bear it, and that the chip is as warm as the fluid: viscosity goes with the temperature inside.',
+    value: kelvin,
+    threshold: bound,
+    off: 1 + Math.abs(kelvin - bound),
+  });
 }
 
 function entrance(

@@ -1,6 +1,7 @@
-import type { StretchEvidence } from '../checks/evidence.ts';
+import type { CellEvidence, StretchEvidence } from '../checks/evidence.ts';
 import type { PieceResult } from '../chip/result.ts';
 import type { Lumped } from '../lump/lump.ts';
+import { NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 
 /** The stretches as the checks see them, with the sections and pressures that results leave out. */
@@ -20,5 +21,22 @@ export function stretchEvidence(
       hydraulicDiameter: narrow.hydraulicDiameter,
       area: narrow.area,
     };
+  });
+}
+
+/** The solved cells as the checks see them. */
+export function cellEvidence({ cells }: Lumped): CellEvidence[] {
+  return cells.flatMap(({ spec, solution }): CellEvidence[] => {
+    if (!solution) return [];
+    const { name: id, origin } = spec;
+    const { flowError, profileError } = solution;
+    return [
+      {
+        id,
+        at: [origin[0] / NANOMETRES, origin[1] / NANOMETRES],
+        accuracy: flowError - profileError,
+        upright: profileError,
+      },
+    ];
   });
 }

@@ -1,3 +1,4 @@
+import { DEFAULT_ACCURACY } from '../cell/cell.ts';
 import { checkFindings } from '../checks/check.ts';
 import { withAccepted } from '../checks/gather.ts';
 import type { Chip } from '../chip/chip.ts';
@@ -15,7 +16,7 @@ import { bandsOf, type ErrorBands } from './bands.ts';
 import { withStrain } from './cell-strain.ts';
 import { cellResults, inertiaFindings, inertiaShares } from './cells.ts';
 import { driftOf } from './drift.ts';
-import { stretchEvidence } from './evidence.ts';
+import { cellEvidence, stretchEvidence } from './evidence.ts';
 import { exposureOf } from './exposure.ts';
 import { faultFindings } from './faults.ts';
 import { chipNet } from './flow-net.ts';
@@ -26,7 +27,10 @@ import { pumpResults } from './pumps.ts';
 import { stillDucts } from './still.ts';
 import { targetResults } from './targets.ts';
 
-/** The solved network in the chip's own terms. */
+/**
+ * The solved network in the chip's own terms.
+ * @param asked relative accuracy that was asked of flows through junctions
+ */
 export function report(
   chip: Chip,
   graph: Graph,
@@ -35,6 +39,7 @@ export function report(
   flow: NetworkSolution,
   drives: DriveCheck,
   depends: (targets: readonly Target[]) => Gradient[] | null,
+  asked = DEFAULT_ACCURACY.flow,
 ): Result {
   const flows = ductFlows(graph, lumped, flow, drives);
   const pieces = lumped.stretches.map((stretch, index) => {
@@ -61,7 +66,15 @@ export function report(
     depends,
   );
   const stretches = stretchEvidence(lumped, flow, pieces);
-  const checks = checkFindings({ chip, graph, fluid, stretches, ports, cells });
+  const checks = checkFindings({
+    chip,
+    graph,
+    fluid,
+    stretches,
+    ports,
+    cells: cellEvidence(lumped),
+    asked,
+  });
   return {
     format: 'channelwright-result',
     version: 1,

@@ -1,7 +1,8 @@
+import type { FindingKind } from '../../solver/checks/kinds.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { readDescription } from '../../solver/chip/description.ts';
 import type { Finding } from '../../solver/problem/finding.ts';
-import { solve } from '../../solver/solve.ts';
+import { type SolveOptions, solve } from '../../solver/solve.ts';
 
 type Json = Record<string, unknown>;
 
@@ -48,6 +49,20 @@ export const ends = (id: string, y: number, flow: unknown = '1 uL/min', diameter
   port(`${id} out`, [66000, y], { pressure: 0 }, diameter),
 ];
 
-export const findings = (chip: Chip): readonly Finding[] => solve(chip, { junctions: 'ideal' }).findings;
+export const findings = (chip: Chip, options: SolveOptions = { junctions: 'ideal' }): readonly Finding[] =>
+  solve(chip, options).findings;
 export const ofKind = (chip: Chip, kind: string): Finding[] =>
   findings(chip).filter((finding) => finding.kind === kind);
+
+/**
+ * A kind with what just passes and what just fails, a chip or what is found of something else; where the
+ * finding has them, the number and its threshold as worked out by hand; how it is solved, if not as ideal.
+ */
+export type Case = readonly [
+  kind: FindingKind,
+  passes: Chip | (() => readonly Finding[]),
+  fails: Chip | (() => readonly Finding[]),
+  value?: number | undefined,
+  threshold?: number | undefined,
+  options?: SolveOptions | undefined,
+];
