@@ -1,0 +1,83 @@
+import { Clipper, FillRule, type Paths64 } from 'clipper2-ts';
+import Flatbush from 'flatbush';
+import { metres } from '../../solver/chip/units.ts';
+import type { Deviation } from './report.ts';
+import type { Work } from './work.ts';
+
+/** Vertices of the difference that are measured at most. */
+const MOST = 20_000;
+/** Edges looked at for the nearest. */
+const NEAREST = 12;
+
+/** How far `made` lies off `drawn`, nm paths in, SI out. */
+export function deviation(drawn: Paths64, made: Paths64, work: Work): Deviation {
+  const area = Clipper.areaPaths(drawn);
+  let perimeter = 0;
+  for (const path of drawn) {
+    path.forEach((p, i) => {
+      const q = path[(i + 1) % path.length];
+      perimeter += Math.hypot(q.x - p.x, q.y - p.y);
+    });
+  }
+  work.at(0.2);
+  const off = Clipper.xor(drawn, made, FillRule.NonZero);
+  const difference = off.reduce((sum, path) => sum + Clipper.area(path), 0);
+  work.at(0.5);
+  const [fromDrawn, fromMade] = [new Edges(drawn), new Edges(made)];
+  const count = off.reduce((sum, path) => sum + path.length, 0);
+  const stride = Math.max(1, Math.ceil(count / MOST));
+  let furthest = 0;
+  let at: [number, number] | null = null;
+  let k = 0;
+  for (const path of off) {
+    for (const { x, y } of path) {
+      k += 1;
+      if (k % stride !== 0) continue;
+      work.at(0.5 + (0.5 * k) / count);
+      const d = Math.max(fromDrawn.distance(x, y), fromMade.distance(x, y));
+      if (d > furthest) [furthest, at] = [d, [x, y]];
+    }
+  }
+  return {
+    area: area * metres(1) ** 2,
+    perimeter: metres(perimeter),
+    difference: difference * metres(1) ** 2,
+    share: area > 0 ? difference / area : 0,
+    meanOffset: perimeter > 0 ? metres(difference / perimeter) : 0,
+    furthest: metres(furthest),
+    furthestAt: at && [metres(at[0]), metres(at[1])],
+  };
+}
+
+class Edges {
+  readonly #ends: Float64Array;
+  readonly #index: Flatbush | null;
+
+  constructor(paths: Paths64) {
+    const count = paths.reduce((sum, path) => sum + path.length, 0);
+    this.#ends = new Float64Array(4 * count);
+    this.#index = count > 0 ? new Flatbush(count) : null;
+    let k = 0;
+    for (const path of paths) {
+      path.forEach((p, i) => {
+        const q = path[(i + 1) % path.length];
+        this.#ends.set([p.x, p.y, q.x, q.y], k);
+        k += 4;
+        this.#index?.add(Math.min(p.x, q.x), Math.min(p.y, q.y), Math.max(p.x, q.x), Math.max(p.y, q.y));
+      });
+    }
+    this.#index?.finish();
+  }
+
+  distance(x: number, y: number): number {
+    let best = Infinity;
+    for (const i of this.#index?.neighbors(x, y, NEAREST) ?? []) {
+      const [ax, ay, bx, by] = this.#ends.subarray(4 * i, 4 * i + 4);
+      const [dx, dy] = [bx - ax, by - ay];
+      const dd = dx * dx + dy * dy;
+      const t = dd > 0 ? Math.min(1, Math.max(0, ((x - ax) * dx + (y - ay) * dy) / dd)) : 0;
+      best = Math.min(best, Math.hypot(x - ax - t * dx, y - ay - t * dy));
+    }
+    return best === Infinity ? 0 : best;
+  }
+}

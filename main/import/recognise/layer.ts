@@ -1,0 +1,170 @@
+import { Clipper, ClipType, EndType, FillRule, JoinType, type Paths64 } from 'clipper2-ts';
+import type { Track } from '../drawing.ts';
+import type { Work } from '../work.ts';
+import { type Course, coursesOf, type Step } from './courses.ts';
+import { joined } from './joints.ts';
+import { type Area, booleanAreas, type Frame, pathsOf, toNm } from './plane.ts';
+import { stripsOf } from './strips.ts';
+import { triangulate } from './triangles.ts';
+import { wallsOf } from './walls.ts';
+
+export interface Found {
+  readonly course: Course;
+  /** How far either end is to be led on into a chamber, nm. */
+  readonly into: readonly [number, number];
+}
+
+/** Channels that regions are made of; what they do not cover is left to chambers. */
+export function recognise(areas: readonly Area[], work: Work, told: (share: number) => void): Found[] {
+  const found: Found[] = [];
+  areas.forEach((area, i) => {
+    told(i / areas.length);
+    const loops = wallsOf(area);
+    const triangles = triangulate(loops, work);
+    if (!triangles) return;
+    const { courses, into } = joined(alone(stripsOf(loops.flat(), triangles)));
+    courses.forEach((course, k) => {
+      found.push({ course, into: into[k] });
+    });
+  });
+  return found;
+}
+
+/** A stretch shorter than this many widths between much narrower ones, or by itself, is a chamber. */
+const SHORT_ROOM = 3;
+const SHORT_ALONE = 4;
+const NARROWER = 0.6;
+
+/** Strips without those that are rooms rather than channels; their ground goes to the knots beside them. */
+function alone(all: ReturnType<typeof stripsOf>): ReturnType<typeof stripsOf> {
+  const { strips, knots } = all;
+  const rooms = new Set<number>();
+  strips.forEach(({ ends, length, axis }, s) => {
+    if (axis?.kind !== 'line') return;
+    const width = Math.max(ends[0].width, ends[1].width);
+    const others = ends.flatMap(({ knot }) =>
+      knot < 0
+        ? []
+        : knots[knot].ends
+            .filter(({ strip }) => strip !== s)
+            .map(({ strip, end }) => strips[strip].ends[end].width),
+    );
+    const narrow = others.every((other) => other <= NARROWER * width);
+    if (narrow && length < (others.length > 0 ? SHORT_ROOM : SHORT_ALONE) * width) rooms.add(s);
+  });
+  if (rooms.size === 0) return all;
+  // The knots at both ends of a room become one, with the room's ground in it.
+  const parent = knots.map((_, k) => k);
+  const find = (k: number): number => {
+    while (parent[k] !== k) k = parent[k];
+    return k;
+  };
+  const extra = new Map<number, number>();
+  for (const s of rooms) {
+    const { ends, length } = strips[s];
+    const [a, b] = ends.map(({ knot }) => knot).filter((knot) => knot >= 0);
+    if (a === undefined) continue;
+    if (b !== undefined) parent[find(a)] = find(b);
+    extra.set(a, (extra.get(a) ?? 0) + (length * (ends[0].width + ends[1].width)) / 2);
+  }
+  const numbers = new Map<number, number>();
+  strips.forEach((_, s) => {
+    if (!rooms.has(s)) numbers.set(s, numbers.size);
+  });
+  const merged = knots.map(() => ({ ends: [] as { strip: number; end: 0 | 1 }[], area: 0 }));
+  knots.forEach((knot, k) => {
+    const into = merged[find(k)];
+    into.area += knot.area + (extra.get(k) ?? 0);
+    for (const { strip, end } of knot.ends) {
+      const number = numbers.get(strip);
+      if (number !== undefined) into.ends.push({ strip: number, end });
+    }
+  });
+  return { strips: strips.filter((_, s) => !rooms.has(s)), knots: merged };
+}
+
+/** Channels of a path that has a width. */
+export function trackCourses({ vertices, closed, widths }: Track, frame: Frame): Course[] {
+  const nm = toNm(vertices, frame);
+  const count = nm.length / 3;
+  const edges = closed ? count : count - 1;
+  const steps: Step[] = [];
+  for (let i = 0; i < edges; i += 1) {
+    const k = 3 * i;
+    const next = 3 * ((i + 1) % count);
+    steps.push(...arcSteps(nm[k], nm[k + 1], nm[next], nm[next + 1], nm[k + 2]));
+  }
+  const scaled = widths.map((width) => width * frame.scale);
+  const even = scaled.every((width) => Math.abs(width - scaled[0]) <= 1);
+  if (even) return coursesOf(steps, scaled[0]);
+  const out: Course[] = [];
+  for (let i = 0; i < edges; i += 1) {
+    const k = 3 * i;
+    const next = 3 * ((i + 1) % count);
+    const own = arcSteps(nm[k], nm[k + 1], nm[next], nm[next + 1], nm[k + 2]);
+    const [w0, w1] = [scaled[2 * i], scaled[2 * i + 1]].map((width) => Math.max(1, Math.round(width)));
+    for (const course of coursesOf(own, w0)) out.push({ ...course, width: [w0, w1] });
+  }
+  return out;
+}
+
+/** An edge with a bulge as steps of at most half a turn. */
+function arcSteps(x0: number, y0: number, x1: number, y1: number, bulge: number): Step[] {
+  if (bulge === 0) return [{ x0, y0, x1, y1, sweep: 0, radius: 0 }];
+  const sweep = 4 * Math.atan(bulge);
+  const chord = Math.hypot(x1 - x0, y1 - y0);
+  const radius = Math.abs(chord / (2 * Math.sin(sweep / 2)));
+  if (Math.abs(sweep) <= 3) return [{ x0, y0, x1, y1, sweep, radius }];
+  const [mx, my] = [(x0 + x1) / 2 + (bulge * (y1 - y0)) / 2, (y0 + y1) / 2 - (bulge * (x1 - x0)) / 2];
+  return [
+    { x0, y0, x1: mx, y1: my, sweep: sweep / 2, radius },
+    { x0: mx, y0: my, x1, y1, sweep: sweep / 2, radius },
+  ];
+}
+
+/** What counts as ground at all, nm: thinner than twice this it is the edge of something else. */
+const THINNEST = 100;
+const THIN_SHARE = 0.03;
+const THICKEST = 3000;
+/** Chambers reach this far into the channels beside them, nm, so that no rounding parts them. */
+const OVERLAP = 8;
+
+/** The parts of `ground` that `covered` leaves, without what is only a thin edge. */
+export function restOf(ground: Paths64, covered: Paths64, narrowest: number): Area[] {
+  const left = covered.length > 0 ? Clipper.difference(ground, covered, FillRule.NonZero) : ground;
+  if (left.length === 0) return [];
+  const thin = Math.min(THICKEST, Math.max(THINNEST, THIN_SHARE * narrowest));
+  const thick = Clipper.inflatePaths(left, -thin, JoinType.Miter, EndType.Polygon, 4);
+  if (thick.length === 0) return [];
+  const again = Clipper.inflatePaths(thick, thin + OVERLAP, JoinType.Miter, EndType.Polygon, 4);
+  const grown = Clipper.inflatePaths(left, OVERLAP, JoinType.Miter, EndType.Polygon, 4);
+  const both = Clipper.intersect(again, grown, FillRule.NonZero);
+  return booleanAreas(ClipType.Intersection, both, ground);
+}
+
+/** An area as outlines without holes: cut through its holes, the parts overlapping a little. */
+export function withoutHoles(area: Area, depth = 0): Paths64 | null {
+  if (area.holes.length === 0) return [area.outer];
+  if (depth > 60) return null;
+  const box = Clipper.getBounds(area.outer);
+  const hole = Clipper.getBounds(area.holes[area.holes.length >> 1]);
+  const x = Math.round((hole.left + hole.right) / 2);
+  const out: Paths64 = [];
+  for (const [from, to] of [
+    [box.left - 1, x + OVERLAP],
+    [x - OVERLAP, box.right + 1],
+  ]) {
+    const band = [
+      { x: from, y: box.top - 1 },
+      { x: to, y: box.top - 1 },
+      { x: to, y: box.bottom + 1 },
+      { x: from, y: box.bottom + 1 },
+    ];
+    for (const part of booleanAreas(ClipType.Intersection, pathsOf([area]), [band])) {
+      const outlines = withoutHoles(part, depth + 1);
+      if (!outlines) return null;
+      out.push(...outlines);
+    }
+  }
+  return out;
+}

@@ -1,0 +1,154 @@
+import {
+  Clipper,
+  Clipper64,
+  ClipType,
+  FillRule,
+  type Path64,
+  type Paths64,
+  type PolyPath64,
+  PolyTree64,
+} from 'clipper2-ts';
+import Flatbush from 'flatbush';
+import { arcPoints } from '../curves.ts';
+import type { DrawnLayer, Vertices } from '../drawing.ts';
+import type { Work } from '../work.ts';
+
+/** Furthest that chords lie off the arcs they stand for, nm. */
+const CHORD_ERROR = 20;
+
+/** One connected area: outer boundary counter-clockwise, holes clockwise; whole nm. */
+export interface Area {
+  readonly outer: Path64;
+  readonly holes: Paths64;
+}
+
+/** From drawing units to nanometres of the chip. */
+export interface Frame {
+  readonly scale: number;
+  readonly x: number;
+  readonly y: number;
+}
+
+export function toNm(vertices: Vertices, { scale, x, y }: Frame): Float64Array {
+  return vertices.map((value, k) =>
+    k % 3 === 0 ? value * scale + x : k % 3 === 1 ? value * scale + y : value,
+  );
+}
+
+/** A loop as whole nanometres, arcs cut to chords. */
+export function pathOf(vertices: Vertices, frame: Frame): Path64 {
+  const nm = toNm(vertices, frame);
+  const points: number[] = [];
+  for (let k = 0; k < nm.length; k += 3) {
+    points.push(nm[k], nm[k + 1], 0);
+    if (nm[k + 2] === 0) continue;
+    const next = (k + 3) % nm.length;
+    arcPoints(nm[k], nm[k + 1], nm[next], nm[next + 1], nm[k + 2], CHORD_ERROR, points);
+  }
+  const path: Path64 = [];
+  for (let k = 0; k < points.length; k += 3)
+    path.push({ x: Math.round(points[k]), y: Math.round(points[k + 1]) });
+  return path;
+}
+
+/** The union of a layer's closed regions, and how many outlines were taken as walls inside others. */
+export function layerAreas(layer: DrawnLayer, frame: Frame, work: Work): { areas: Area[]; posts: number } {
+  const plain: Paths64 = [];
+  const nesting: Paths64 = [];
+  layer.regions.forEach(({ loops, fill, nests }, i) => {
+    work.at((0.5 * i) / layer.regions.length);
+    const paths = loops.map((loop) => pathOf(loop, frame));
+    if (nests) nesting.push(positive(paths[0]));
+    else if (paths.length === 1 && fill === 'non-zero') plain.push(positive(paths[0]));
+    else plain.push(...Clipper.union(paths, fill === 'even-odd' ? FillRule.EvenOdd : FillRule.NonZero));
+  });
+  const levels = levelsOf(nesting, work);
+  let all: Paths64 = [];
+  levels.forEach((level, depth) => {
+    if (depth % 2 === 0) all = Clipper.union([...all, ...level], FillRule.NonZero);
+    else all = Clipper.difference(all, level, FillRule.NonZero);
+    work.at(0.5 + (0.4 * depth) / levels.length);
+  });
+  const posts = levels.reduce((sum, level, depth) => sum + (depth % 2 === 1 ? level.length : 0), 0);
+  return { areas: areasOf([...all, ...plain]), posts };
+}
+
+function positive(path: Path64): Path64 {
+  return Clipper.area(path) < 0 ? path.toReversed() : path;
+}
+
+/** The united areas of paths that are filled by their winding. */
+export function areasOf(paths: Paths64): Area[] {
+  if (paths.length === 0) return [];
+  return booleanAreas(ClipType.Union, paths, []);
+}
+
+export function booleanAreas(type: ClipType, subject: Paths64, clip: Paths64): Area[] {
+  const clipper = new Clipper64();
+  clipper.preserveCollinear = false;
+  if (subject.length > 0) clipper.addSubject(subject);
+  if (clip.length > 0) clipper.addClip(clip);
+  const tree = new PolyTree64();
+  clipper.execute(type, FillRule.NonZero, tree);
+  const areas: Area[] = [];
+  collect(tree, areas);
+  return areas;
+}
+
+function collect(tree: PolyPath64, areas: Area[]): void {
+  for (let i = 0; i < tree.count; i += 1) {
+    const outer = tree.child(i);
+    const holes: Paths64 = [];
+    for (let k = 0; k < outer.count; k += 1) {
+      holes.push(outer.child(k).poly!);
+      collect(outer.child(k), areas);
+    }
+    areas.push({ outer: outer.poly!, holes });
+  }
+}
+
+export const pathsOf = (areas: readonly Area[]): Paths64 =>
+  areas.flatMap(({ outer, holes }) => [outer, ...holes]);
+
+/** Loops by how many others hold them whole. */
+function levelsOf(loops: Paths64, work: Work): Paths64[] {
+  if (loops.length === 0) return [];
+  const boxes = loops.map((loop) => Clipper.getBounds(loop));
+  const sizes = loops.map((loop) => Clipper.area(loop));
+  const index = new Flatbush(loops.length);
+  for (const { left, top, right, bottom } of boxes) index.add(left, top, right, bottom);
+  index.finish();
+  const levels: Paths64[] = [];
+  loops.forEach((loop, i) => {
+    const box = boxes[i];
+    let depth = 0;
+    for (const other of index.search(box.left, box.top, box.right, box.bottom)) {
+      work.tick();
+      const around = boxes[other];
+      if (sizes[other] <= sizes[i]) continue;
+      if (around.left > box.left || around.right < box.right) continue;
+      if (around.top > box.top || around.bottom < box.bottom) continue;
+      work.tick((loop.length * loops[other].length) >> 6);
+      if (holds(loops[other], loop)) depth += 1;
+    }
+    levels[depth] ??= [];
+    levels[depth].push(loop);
+  });
+  return Array.from(levels, (level) => level ?? []);
+}
+
+/** Whether a loop lies within another, touching allowed. */
+function holds(outer: Path64, inner: Path64): boolean {
+  for (const { x, y } of inner) {
+    let inside = false;
+    let on = false;
+    for (let i = 0, j = outer.length - 1; i < outer.length; j = i, i += 1) {
+      const [a, b] = [outer[i], outer[j]];
+      const cross = (b.x - a.x) * (y - a.y) - (b.y - a.y) * (x - a.x);
+      if (cross === 0 && (x - a.x) * (x - b.x) <= 0 && (y - a.y) * (y - b.y) <= 0) on = true;
+      if (a.y > y !== b.y > y && x < ((b.x - a.x) * (y - a.y)) / (b.y - a.y) + a.x) inside = !inside;
+    }
+    if (!on && !inside) return false;
+  }
+  return true;
+}
