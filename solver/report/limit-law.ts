@@ -140,6 +140,18 @@ function passesFindings(limit: LawLimit, route: Route, chip: Chip): Finding[] {
       where: `port:${from.id}`,
       says: `The loop from ${from.id} to ${to.id} goes round in ${round.toPrecision(3)} s, tubing included: ${Math.floor(passes).toLocaleString('en')} times in the assay. The limit "${limit.name}" counts ${limit.passes === 1 ? 'one pass' : `${limit.passes.toLocaleString('en')} passes`}.`,
       do: `Count ${Math.ceil(passes).toLocaleString('en')} passes in the limit, or shorten the assay.`,
+      value: passes,
+      threshold: limit.passes,
+      remedy: {
+        label: `count ${Math.ceil(passes).toLocaleString('en')} passes in ${limit.name}`.slice(0, 200),
+        changes: [
+          {
+            kind: 'set',
+            key: 'limits',
+            value: chip.limits.map((one) => (one === limit ? { ...limit, passes: Math.ceil(passes) } : one)),
+          },
+        ],
+      },
     },
   ];
 }

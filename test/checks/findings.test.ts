@@ -15,6 +15,7 @@ const WITH_BUTTON = [
   'hole-narrow',
   'layer-wall',
   'least-width',
+  'loop-passes',
   'port-hole',
   'process-profile',
   'roof-sags',

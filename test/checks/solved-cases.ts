@@ -233,7 +233,7 @@ export const SOLVED_CASES: readonly Case[] = [
     limited({ law: LAW, damage: '1 %' }, '101.0 uL/min'),
   ],
   // once round takes 1.18 µL at 3 µL/min: 23.6 s
-  ['loop-passes', loop('23.5 s'), loop('23.7 s')],
+  ['loop-passes', loop('23.5 s'), loop('23.7 s'), 1.00424, 1],
   ['streams-meet', meeting(1), meeting(2)],
   ['routes-summed', comb(70, 71), comb(71, 71)],
   // pumps
