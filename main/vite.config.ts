@@ -2,6 +2,7 @@ import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { stripTypeScriptTypes } from 'node:module';
 import { join, resolve } from 'node:path';
 import { defineConfig, type Plugin } from 'vite';
+import { FONT_FILES, fontBytes } from './export/note/font-files.ts';
 
 const here = import.meta.dirname;
 const usual = resolve(here, '../dist/main');
@@ -22,12 +23,27 @@ function preload(): Plugin {
   };
 }
 
+/** The typefaces of the note, in a folder beside the code that sets it. */
+function fonts(): Plugin {
+  let out = usual;
+  return {
+    name: 'fonts',
+    configResolved(config) {
+      out = resolve(config.root, config.build.outDir);
+    },
+    closeBundle() {
+      mkdirSync(join(out, 'fonts'), { recursive: true });
+      for (const font of FONT_FILES) writeFileSync(join(out, 'fonts', font.file), fontBytes(font));
+    },
+  };
+}
+
 // The desktop's own code for packaging: the entry and the windows' threads, each one file in one folder.
 // Only what the runtime brings and what holds native code stays outside.
 export default defineConfig({
   root: here,
   publicDir: false,
-  plugins: [preload()],
+  plugins: [preload(), fonts()],
   ssr: { noExternal: true, external: ['electron', 'better-sqlite3'] },
   build: {
     ssr: true,
@@ -40,6 +56,7 @@ export default defineConfig({
         electron: join(here, 'electron', 'main.ts'),
         'session-worker': join(here, 'session', 'worker.ts'),
         'mask-worker': join(here, 'requests', 'mask-worker.ts'),
+        'note-worker': join(here, 'requests', 'note-worker.ts'),
       },
       output: { format: 'es', entryFileNames: '[name].js', chunkFileNames: '[name]-[hash].js' },
     },

@@ -3,6 +3,7 @@ import type { Chip } from '../../solver/chip/chip.ts';
 import type { ChipEdit } from '../../solver/chip/edit.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import { MASK_FORMATS, maskOptions, maskReport, maskState } from './mask.ts';
+import { noteState, noteWish } from './note.ts';
 
 /**
  * The seam between the page and whichever host runs it: every request a page can make, every event
@@ -318,6 +319,22 @@ export const REQUESTS = {
   },
   /** Ends a job; nothing of it is written. */
   'mask.cancel': { input: z.strictObject({ job: z.int().positive() }), output: nothing },
+
+  /**
+   * Begins to write the fabrication note, or its flow-split table alone, in a thread of its own; the event
+   * `note` tells how it ended. `result` is that of the chip at `seq`; a chip that has moved on is refused.
+   */
+  'note.start': {
+    input: z.strictObject({ ...noteWish, seq, result, path, replace: z.boolean().optional() }),
+    output: z.object({ job: z.int().positive() }),
+  },
+  /** Ends a job; nothing of it is written. */
+  'note.cancel': { input: z.strictObject({ job: z.int().positive() }), output: nothing },
+  /** The flow-split table for the clipboard: tabs between cells, as spreadsheets take it. */
+  'note.split': {
+    input: z.strictObject({ seq, result }),
+    output: z.object({ tabbed: z.string(), rows: z.number() }),
+  },
 } as const;
 
 /** What a host sends unasked, to one window. */
@@ -332,6 +349,8 @@ export const EVENTS = {
   problem: z.object({ kind: z.string(), what: z.string(), where: z.string(), remedy: z.string() }),
   /** How a mask job stands; sent at every step and once at its end. */
   mask: maskState,
+  /** How a note job ended. */
+  note: noteState,
   /** The host is about to stop; everything is kept. */
   closing: z.object({ says: z.string() }),
 } as const;

@@ -5,6 +5,7 @@ import { aboutRequests } from './about.ts';
 import { fileRequests } from './files.ts';
 import { keptRequests } from './kept.ts';
 import { maskRequests } from './masks.ts';
+import { noteRequests } from './notes.ts';
 import { projectRequests } from './project.ts';
 import { userRequests } from './user.ts';
 
@@ -22,6 +23,7 @@ export const HANDLERS: Handlers<Exclude<RequestName, 'files.choose'>> = {
   ...fileRequests,
   ...keptRequests,
   ...maskRequests,
+  ...noteRequests,
   ...projectRequests,
   ...userRequests,
 };

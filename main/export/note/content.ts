@@ -5,7 +5,16 @@ import { writeDescription } from '../../../solver/chip/description-write.ts';
 import { readGraph } from '../../../solver/chip/read-graph.ts';
 import type { Result } from '../../../solver/chip/result.ts';
 import { metres } from '../../../solver/chip/units.ts';
-import { type Block, counted, plain, type Run, type Section, strong, type Table } from './blocks.ts';
+import {
+  type Block,
+  counted,
+  plain,
+  type Run,
+  type Section,
+  strong,
+  type Table,
+  unbroken,
+} from './blocks.ts';
 import { type Paper, planPicture, size } from './drawing.ts';
 import { driftTable, drivesTable, routesSection, splitTable, splitWords, startWords } from './flow.ts';
 import { channelsSection, channelsTable, layersTable, portsTable, processBlocks } from './making.ts';
@@ -112,7 +121,7 @@ function glance(chip: Chip, result: Result): Block {
       ? [`no ${one} is set`]
       : bad === 0
         ? [`${counted(count, one)}, all met`]
-        : [strong(`${bad} of ${counted(count, one)} missed`)];
+        : [strong(count === 1 ? `the ${one} is missed` : `${bad} of ${counted(count, one)} missed`)];
   return {
     kind: 'facts',
     rows: [
@@ -193,7 +202,7 @@ export function noteOf(chip: Chip, result: Result, options: NoteOptions): Note {
     kind: 'note',
     title: chip.name,
     subtitle: 'Fabrication note',
-    remark: chip.note,
+    remark: unbroken(chip.note),
     origin,
     sections,
     tables: [channelsTable(chip)],

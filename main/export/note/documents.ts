@@ -1,5 +1,6 @@
 import type { Chip } from '../../../solver/chip/chip.ts';
 import type { Result } from '../../../solver/chip/result.ts';
+import type { NoteFormat } from '../../contract/note.ts';
 import type { Output } from '../write-files.ts';
 import { type Note, type NoteOptions, noteOf, splitNote, tablesOf } from './content.ts';
 import { splitTable } from './flow.ts';
@@ -7,10 +8,6 @@ import { noteHtml } from './html.ts';
 import { notePdf, paperOf } from './pdf.ts';
 import type { PaperName } from './pdf-page.ts';
 import { csvPath, tableCsv } from './tables.ts';
-
-/** What can be written of a chip for others: which document, in which format. */
-export const NOTE_FORMATS = ['pdf', 'html', 'csv'] as const;
-export type NoteFormat = (typeof NOTE_FORMATS)[number];
 
 export interface Documents {
   readonly chip: Chip;

@@ -21,10 +21,10 @@ export interface FontFile {
 }
 
 const own = (from: 'literata' | 'commissioner', weight: number): FontFile[] =>
-  (from === 'literata'
-    ? ['latin', 'latin-ext', 'greek', 'cyrillic']
-    : ['latin', 'latin-ext', 'greek', 'cyrillic']
-  ).map((script) => ({ from, file: `${from}-${script}-${weight}-normal.woff` }));
+  ['latin', 'latin-ext', 'greek', 'cyrillic'].map((script) => ({
+    from,
+    file: `${from}-${script}-${weight}-normal.woff`,
+  }));
 
 const fallback = (file: string): FontFile => ({ from: 'dejavu', file });
 
@@ -35,6 +35,26 @@ export const CHAINS: Readonly<Record<Face, readonly FontFile[]>> = {
   figure: [...own('commissioner', 400), fallback('DejaVuSans.ttf')],
   'figure strong': [...own('commissioner', 600), fallback('DejaVuSans-Bold.ttf')],
 };
+
+const web = (from: 'literata' | 'commissioner', weight: 400 | 600): FontFile => ({
+  from,
+  file: `${from}-latin-${weight}-normal.woff2`,
+});
+
+/** What a page of HTML carries inside: other scripts are left to the reader's own fonts. */
+export const WEB_FONTS = [
+  { family: 'Literata', weight: 400, font: web('literata', 400) },
+  { family: 'Literata', weight: 600, font: web('literata', 600) },
+  { family: 'Commissioner', weight: 400, font: web('commissioner', 400) },
+  { family: 'Commissioner', weight: 600, font: web('commissioner', 600) },
+] as const;
+
+/** Every file that comes with the program. */
+export const FONT_FILES: readonly FontFile[] = [
+  ...new Map(
+    [...Object.values(CHAINS).flat(), ...WEB_FONTS.map(({ font }) => font)].map((font) => [font.file, font]),
+  ).values(),
+];
 
 /** Bundled, the files lie in a folder beside the program; else in their packages. */
 function pathOf({ from, file }: FontFile): string {

@@ -1,6 +1,6 @@
 import { type Block, type Column, type Run, type Section, type Table, unitOf } from './blocks.ts';
 import type { Note } from './content.ts';
-import { fontBytes } from './font-files.ts';
+import { fontBytes, WEB_FONTS } from './font-files.ts';
 import { COLOURS } from './pdf-page.ts';
 import type { Item, Picture } from './picture.ts';
 
@@ -27,11 +27,11 @@ const runs = (all: readonly Run[]): string =>
 /** Names may read either way: each cell finds its own direction. */
 const cellText = (text: string): string => (text === '' ? '' : `<bdi>${escaped(text)}</bdi>`);
 
-function face(family: string, from: 'literata' | 'commissioner', weight: 400 | 600): string {
-  const bytes = fontBytes({ from, file: `${from}-latin-${weight}-normal.woff2` });
-  const data = Buffer.from(bytes).toString('base64');
-  return `@font-face{font-family:"${family}";font-weight:${weight};src:url(data:font/woff2;base64,${data}) format("woff2")}`;
-}
+const fontRules = (): string =>
+  WEB_FONTS.map(({ family, weight, font }) => {
+    const data = Buffer.from(fontBytes(font)).toString('base64');
+    return `@font-face{font-family:"${family}";font-weight:${weight};src:url(data:font/woff2;base64,${data}) format("woff2")}`;
+  }).join('\n');
 
 const STYLE = `
 :root{color-scheme:light}
@@ -53,9 +53,10 @@ li::marker{content:"–  "}
 .wide{overflow-x:auto}
 table{border-collapse:collapse;width:100%;margin:14px 0 0}
 caption{text-align:left;font-weight:600;padding-bottom:2px}
-th,td{font-weight:400;text-align:left;vertical-align:top;padding:3px 14px 3px 0;overflow-wrap:anywhere}
+th,td{font-weight:400;text-align:left;vertical-align:top;padding:3px 14px 3px 0}
+.long{overflow-wrap:anywhere;min-width:12em}
 th:last-child,td:last-child{padding-right:0}
-thead th{vertical-align:bottom;border-bottom:1px solid ${COLOURS.ink};overflow-wrap:normal}
+thead th{vertical-align:bottom;border-bottom:1px solid ${COLOURS.ink}}
 tbody th,tbody td{border-bottom:1px solid ${COLOURS.line}}
 tbody tr{break-inside:avoid}
 tfoot td{border:0;padding-top:5px}
@@ -112,7 +113,9 @@ function tableHtml({ title, columns, rows, missed, foot, more }: Table, titled: 
     const cells = columns.map((column, c) => {
       const text = cellText(column.texts[i]!);
       const no = column.kind === 'verdict' && column.cells[i] === false;
-      const kind = column.kind === 'figures' ? ' class="f"' : no ? ' class="no"' : '';
+      const long = /\S{24}/.test(column.texts[i]!);
+      const kind =
+        column.kind === 'figures' ? ' class="f"' : no ? ' class="no"' : long ? ' class="long"' : '';
       return c === 0 ? `<th scope="row"${kind}>${text}</th>` : `<td${kind}>${text}</td>`;
     });
     return `<tr${missed?.has(i) ? ' class="missed"' : ''}>${cells.join('')}</tr>`;
@@ -164,12 +167,6 @@ const sectionHtml = ({ id, title, blocks }: Section): string =>
   `<section id="${escaped(id)}">\n<h2>${escaped(title)}</h2>\n${blocks.map((block) => blockHtml(block, title)).join('\n')}\n</section>`;
 
 export function noteHtml({ title, subtitle, remark, origin, sections }: Note): string {
-  const fonts = [
-    face('Literata', 'literata', 400),
-    face('Literata', 'literata', 600),
-    face('Commissioner', 'commissioner', 400),
-    face('Commissioner', 'commissioner', 600),
-  ].join('\n');
   return `<!doctype html>
 <html lang="en">
 <head>
@@ -178,7 +175,7 @@ export function noteHtml({ title, subtitle, remark, origin, sections }: Note): s
 <meta name="viewport" content="width=device-width">
 <meta name="generator" content="${escaped(origin.program)}">
 <title>${escaped(title)}: ${escaped(subtitle.toLowerCase())}</title>
-<style>${fonts}${STYLE}</style>
+<style>${fontRules()}${STYLE}</style>
 </head>
 <body>
 <main>

@@ -61,7 +61,8 @@ function wantOf(sheet: Sheet, column: Column, size: number): Want & { before: nu
       'figure',
       size,
     );
-    const least = Math.max(head, before + after);
+    // a head of more than two or three lines reads badly, however short its figures
+    const least = Math.max(head, headWhole / 2, before + after);
     return { least, most: Math.max(least, headWhole), before, after };
   }
   if (isBlank(column))

@@ -144,8 +144,8 @@ function accuracyWords(result: Result): Block {
   const solved = result.cells.filter(({ accuracy }) => accuracy < 1);
   const worst = solved.reduce((most, { accuracy }) => Math.max(most, accuracy), 0);
   const reynolds = highestReynolds(result);
-  const share = (value: number): string =>
-    value === 0 ? 'less than a millionth' : figure(value, 'share', 2, '%');
+  const share = (value: number): string => (value === 0 ? 'a millionth' : figure(value, 'share', 2, '%'));
+  const moved = (value: number): string => (value === 0 ? 'not moved' : `±\u00a0${share(value)}`);
   return {
     kind: 'facts',
     rows: [
@@ -171,7 +171,7 @@ function accuracyWords(result: Result): Block {
             {
               name: 'Tolerances of making',
               value: [
-                `shares ± ${share(making.share.likely)} (at worst ${share(making.share.worst)}), pressures ± ${share(making.pressure.likely)}, peak wall shear ± ${share(making.shear.likely)}${chiefWords(making.share)}`,
+                `shares ${moved(making.share.likely)}${making.share.worst > 0 ? ` (at worst ${share(making.share.worst)})` : ''}, pressures ${moved(making.pressure.likely)}, peak wall shear ${moved(making.shear.likely)}${chiefWords(making.share)}`,
               ],
             },
           ]
@@ -222,11 +222,9 @@ function assumptions({ layers, fluid, process }: Chip, result: Result): Run[][] 
       'Each layer has its stated depth everywhere, each channel its drawn width; inner corners have the stated fillet.',
     ],
     ['Where streams meet, they are taken as mixed before they part again, for residence times and doses.'],
-    [
-      process
-        ? 'What the process holds is as listed, whoever’s number it is; the shop’s own rules come first.'
-        : 'No process is stated.',
-    ],
+    ...(process
+      ? [['What the process holds is as listed, whoever’s number it is; the shop’s own rules come first.']]
+      : []),
     ...(result.drift ? [['Reservoirs empty and fill as stated; levels change slowly beside the flow.']] : []),
   ];
 }
