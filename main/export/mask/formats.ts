@@ -3,7 +3,7 @@ import type { Part } from './cells.ts';
 import { dxfLayer, writeDxf } from './dxf.ts';
 import { gdsiiLayer, writeGdsii } from './gdsii.ts';
 import type { MaskModel, MaskPlane } from './model.ts';
-import { PDF_ARC, writePdf } from './pdf.ts';
+import { PDF_ARC } from './page.ts';
 import type { ReadMask } from './read.ts';
 import { readDxf } from './read-dxf.ts';
 import { readGdsii } from './read-gdsii.ts';
@@ -70,7 +70,8 @@ export const FORMATS: Readonly<Record<MaskFormat, Format>> = {
     onePlane: false,
     arcs: PDF_ARC,
     layer: dxfLayer,
-    write: writePdf,
+    // loaded where it is asked for: the library for it is large
+    write: async (model) => (await import('./pdf.ts')).writePdf(model),
     read: readPdf,
   },
 };

@@ -1,5 +1,5 @@
 import type { Path64 } from 'clipper2-ts';
-import { NM_PER_M } from '../../../solver/chip/units.ts';
+import { NM_PER_M, unitSize } from '../../../solver/chip/units.ts';
 import { LINE, legend, letterHeight, PARTS, type Part } from './cells.ts';
 import type { MaskModel, MaskPlane } from './model.ts';
 import { escaped } from './names.ts';
@@ -93,10 +93,10 @@ class Stream {
     });
   }
 
-  real(record: number, ...values: readonly number[]): void {
+  inverses(record: number, ...values: readonly number[]): void {
     const at = this.#head(record, 8 * values.length);
     values.forEach((value, i) => {
-      this.#bytes.set(real8(value), at + 8 * i);
+      this.#bytes.set(inverse8(value), at + 8 * i);
     });
   }
 
@@ -112,26 +112,22 @@ class Stream {
   }
 }
 
-/** Excess-64 base-16 floating point: sign, 7 bits of exponent, 56 bits of fraction in [1/16, 1). */
-export function real8(value: number): Uint8Array {
-  const out = new Uint8Array(8);
-  if (value === 0) return out;
-  let exponent = 64;
-  let fraction = Math.abs(value);
-  while (fraction >= 1) {
-    fraction /= 16;
-    exponent += 1;
-  }
-  while (fraction < 1 / 16) {
-    fraction *= 16;
+/**
+ * One over `whole` as excess-64 base-16 floating point: sign, 7 bits of exponent, 56 bits of fraction in
+ * [1/16, 1), rounded from the exact value (a double has three bits less).
+ */
+export function inverse8(whole: number): Uint8Array {
+  const den = BigInt(whole);
+  let exponent = 65;
+  // 2^56 in the fraction's place stands for 1
+  let scaled = 1n << 52n;
+  while (scaled / den < 1n << 52n) {
+    scaled <<= 4n;
     exponent -= 1;
   }
-  out[0] = (value < 0 ? 0x80 : 0) | exponent;
-  let bits = BigInt(Math.round(fraction * 2 ** 53)) << 3n;
-  for (let i = 7; i > 0; i--) {
-    out[i] = Number(bits & 0xffn);
-    bits >>= 8n;
-  }
+  const fraction = (2n * scaled + den) / (2n * den);
+  const out = new Uint8Array(8);
+  new DataView(out.buffer).setBigUint64(0, (BigInt(exponent) << 56n) | fraction);
   return out;
 }
 
@@ -144,7 +140,7 @@ export function writeGdsii(model: MaskModel): Uint8Array {
   stream.short(RECORD.BGNLIB, ...stamp, ...stamp);
   stream.ascii(RECORD.LIBNAME, 'CHANNELWRIGHT');
   // database unit in user units (1 µm), database unit in m
-  stream.real(RECORD.UNITS, 1e-3, 1 / NM_PER_M);
+  stream.inverses(RECORD.UNITS, NM_PER_M * unitSize('um'), NM_PER_M);
   const structure = (name: string, elements: () => void): void => {
     stream.short(RECORD.BGNSTR, ...stamp, ...stamp);
     stream.ascii(RECORD.STRNAME, name);

@@ -9,7 +9,17 @@ import { MARK_HEIGHT, MARK_WIDTH, markHalf } from './marks.ts';
 import { keyOf } from './names.ts';
 import { commonNotes, layerNotes } from './notes.ts';
 import type { LayerSettings, MaskSettings } from './settings.ts';
-import { type Box, boxOf, circle, type Placing, placed, rectangle, reversed, united } from './shapes.ts';
+import {
+  type Box,
+  boxOf,
+  circle,
+  type Placing,
+  placed,
+  rectangle,
+  reversed,
+  tidied,
+  united,
+} from './shapes.ts';
 import { type WaferLayout, waferLayout } from './wafer.ts';
 
 /**
@@ -132,7 +142,7 @@ function cavitiesOf(
 ): Shape[] {
   return planCavities(chip, graph, layer.id, { fillets: false, holes: settings.pads }).flatMap(
     ({ shape }) => {
-      const openings = compensated(shape, undercut);
+      const openings = compensated(shape, undercut).flatMap(tidied);
       if (openings.length > 0) return openings;
       const box = boxOf([shape])!;
       const at = [box.x0, box.y0].map((nm) => Math.round(nm / 1000)).join(', ');

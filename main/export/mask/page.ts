@@ -23,6 +23,11 @@ export interface Page {
   readonly lines: readonly { readonly text: string; readonly x: number; readonly y: number }[];
 }
 
+/** Longest arc that stands as one cubic in PDF, radians. */
+export const PDF_ARC = Math.PI / 6;
+/** Points of a PDF page per millimetre: 72 to the inch of 25.4 mm. */
+export const POINTS_PER_MM = 72 / 25.4;
+
 const BAR = 10_000_000;
 const BAR_HEIGHT = 200_000;
 /** Ground left round what is drawn. */

@@ -7,7 +7,7 @@ import { PARTS, shifts } from './cells.ts';
 import { cutArcs } from './compare.ts';
 import { dxfLayer } from './dxf.ts';
 import type { MaskModel, MaskPlane } from './model.ts';
-import { type Page, pageOf } from './page.ts';
+import { type Page, PDF_ARC, POINTS_PER_MM, pageOf } from './page.ts';
 
 /**
  * Drawings as PDF at true size, one page each: filled paths, dark on clear or clear on dark. A chip is a
@@ -15,9 +15,6 @@ import { type Page, pageOf } from './page.ts';
  * lie within 4e-7 of their radius of the arc. The numbers are millimetres, turned over and scaled by the page.
  */
 
-export const PDF_ARC = Math.PI / 6;
-/** Points of a page per millimetre: 72 to the inch of 25.4 mm. */
-export const POINTS_PER_MM = 72 / 25.4;
 /** Where there is no lane the outline is a line this wide, mm. */
 const HAIRLINE = 0.02;
 

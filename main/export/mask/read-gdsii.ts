@@ -25,6 +25,7 @@ export function readGdsii(bytes: Uint8Array): ReadMask {
     switch (record) {
       case RECORD.UNITS:
         unit = realOf(bytes, body + 8) * NM_PER_M;
+        if (!(Math.abs(unit - 1) < 1e-12)) throw unreadable('its database unit is not the nanometre');
         break;
       case RECORD.STRNAME:
         structure = textOf(bytes, body, size - 4);
@@ -50,8 +51,7 @@ export function readGdsii(bytes: Uint8Array): ReadMask {
         break;
       case RECORD.XY:
         points = [];
-        for (let k = body; k < at + size; k += 8)
-          points.push([view.getInt32(k) * unit, view.getInt32(k + 4) * unit]);
+        for (let k = body; k < at + size; k += 8) points.push([view.getInt32(k), view.getInt32(k + 4)]);
         break;
       case RECORD.ENDEL:
         if (element === RECORD.BOUNDARY && structure === CHIP)
@@ -72,7 +72,7 @@ export function readGdsii(bytes: Uint8Array): ReadMask {
     at += size;
   }
   if (!ended) throw unreadable('it does not end');
-  if (!(Math.abs(unit - 1) < 1e-12)) throw unreadable('its database unit is not the nanometre');
+  if (unit === 0) throw unreadable('it has no unit');
   return { loops: loops.map, shifts: shifts.length > 0 ? shifts : [[0, 0]], offArc: 0 };
 }
 

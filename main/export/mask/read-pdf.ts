@@ -1,6 +1,6 @@
 import { inflateSync } from 'node:zlib';
 import { NM_PER_M, unitSize } from '../../../solver/chip/units.ts';
-import { POINTS_PER_MM } from './pdf.ts';
+import { POINTS_PER_MM } from './page.ts';
 import { LoopsByLayer, type ReadMask, unreadable } from './read.ts';
 
 const NM = unitSize('mm') * NM_PER_M;
@@ -107,6 +107,7 @@ function arcUnder(
   // to the right of the chord is the outer side of a counter-clockwise arc
   const sagitta = ((mx - x0) * (y1 - y0) - (my - y0) * (x1 - x0)) / chord;
   const bulge = (2 * sagitta) / chord;
+  if (bulge === 0) return { bulge, apart: 0 };
   const sweep = 4 * Math.atan(bulge);
   const radius = chord / 2 / Math.sin(sweep / 2);
   const reach = Math.cos(sweep / 2) * radius;

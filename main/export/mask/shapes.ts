@@ -150,3 +150,31 @@ export function flatPaths(shape: Shape, chordError: number): Path64[] {
   }
   return paths;
 }
+
+/** What no mask holds, nm: edges this short are rounding, and bodies less wide than this slivers. */
+const LEAST = 1;
+/** An arc that rises less than this over its chord is straight, nm. */
+const FLAT = 0.01;
+
+/** The shape without edges that are only rounding and without loops that are slivers; nothing where no more is left. */
+export function tidied(shape: Shape): Shape[] {
+  const loops = shape.map(withoutShortEdges);
+  const wide = loops.filter((loop) => {
+    if (loop.length < 2) return false;
+    return 2 * Math.abs(areaOf([[loop]])) > LEAST * perimeterOf([[loop]]);
+  });
+  return loops.length > 0 && wide[0] === loops[0] ? [wide] : [];
+}
+
+function withoutShortEdges(loop: readonly Edge[]): readonly Edge[] {
+  const n = loop.length;
+  const long: Edge[] = [];
+  loop.forEach((e, k) => {
+    const next = loop[k + 1 === n ? 0 : k + 1]!;
+    const chord = Math.hypot(next.x - e.x, next.y - e.y);
+    if (chord < LEAST) return;
+    const flat = e.bulge !== 0 && Math.abs(e.bulge) * chord < 2 * FLAT;
+    long.push(flat ? { ...e, bulge: 0 } : e);
+  });
+  return long;
+}
