@@ -57,6 +57,7 @@ export default defineConfig({
         'session-worker': join(here, 'session', 'worker.ts'),
         'mask-worker': join(here, 'requests', 'mask-worker.ts'),
         'note-worker': join(here, 'requests', 'note-worker.ts'),
+        'bring-in-worker': join(here, 'import', 'worker.ts'),
       },
       output: { format: 'es', entryFileNames: '[name].js', chunkFileNames: '[name]-[hash].js' },
     },

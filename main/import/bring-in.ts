@@ -7,22 +7,33 @@ import { readGraph } from '../../solver/chip/read-graph.ts';
 import { outlineFault } from '../../solver/chip/schema-outline.ts';
 import { NM_PER_M } from '../../solver/chip/units.ts';
 import { Problem } from '../../solver/problem/problem.ts';
+import type {
+  BringInPicture,
+  BringInReport,
+  ChipLayerReport,
+  Note,
+  Role,
+  BringInSettings as Settings,
+} from '../contract/bring-in.ts';
 import { deviation } from './compare.ts';
-import type { Drawing, DrawnLayer, Note } from './drawing.ts';
+import type { Drawing, DrawnLayer } from './drawing.ts';
 import { placed } from './frame.ts';
 import { endPorts, holePorts, roundsOf } from './ports.ts';
 import { readDrawing } from './read-drawing.ts';
 import { dropExcess } from './recognise/excess.ts';
 import { type Found, recognise, restOf, trackCourses, withoutHoles } from './recognise/layer.ts';
 import { areasOf, type Frame, layerAreas, pathsOf } from './recognise/plane.ts';
-import type { BringInReport, ChipLayerReport } from './report.ts';
-import { type Role, type Settings, suggestedRole } from './settings.ts';
+import { suggestedRole } from './settings.ts';
 import { LIMITS, type Work } from './work.ts';
 
 export interface BroughtIn {
   readonly chip: Chip;
   readonly report: BringInReport;
+  readonly picture: BringInPicture;
 }
+
+/** Vertices of both pictures together beyond which there is none. */
+const MOST_PICTURED = 150_000;
 
 /** Furthest that chords of a curve lie off it where areas are compared, nm. */
 const CHORD_ERROR = 20;
@@ -92,6 +103,8 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
   // Read back as any description is: what comes out is one by its own rules.
   const sound = readDescription(writeDescription(whole), whole.name);
   const graph = readGraph(sound);
+  const picture: BringInPicture = [];
+  let pictured = 0;
   const reports: ChipLayerReport[] = made.map((layer, i) => {
     const id = chip.layers[i].id;
     const polygons = planPolygons(sound, graph, id, {
@@ -99,6 +112,9 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
       fillets: false,
       holes: pads.size > 0,
     });
+    const covered = polygons.flatMap(pathsOfPolygon);
+    pictured += [...layer.ground, ...covered].reduce((sum, path) => sum + path.length, 0);
+    picture.push({ layer: id, drawn: pathData(layer.ground), made: pathData(covered) });
     return {
       id,
       channelsFromPaths: layer.fromPaths,
@@ -111,12 +127,12 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
         }) => a !== b,
       ).length,
       chambers: sound.chambers.filter((chamber) => chamber.layer === id).length,
-      deviation:
-        layer.ground.length > 0 ? deviation(layer.ground, polygons.flatMap(pathsOfPolygon), work) : null,
+      deviation: layer.ground.length > 0 ? deviation(layer.ground, covered, work) : null,
     };
   });
   return {
     chip: sound,
+    picture: pictured > MOST_PICTURED ? [] : picture,
     report: {
       format: 'channelwright-bring-in',
       version: 1,
@@ -327,4 +343,8 @@ function pathsOfPolygon({
   holes: readonly (readonly Point[])[];
 }): Paths64 {
   return [outer, ...holes].map((loop) => loop.map(([x, y]) => ({ x, y })));
+}
+
+function pathData(paths: Paths64): string {
+  return paths.map((path) => `M${path.map(({ x, y }) => `${x} ${y}`).join('L')}Z`).join('');
 }

@@ -1,7 +1,7 @@
 import { Clipper, FillRule, type Paths64 } from 'clipper2-ts';
 import Flatbush from 'flatbush';
 import { metres } from '../../solver/chip/units.ts';
-import type { Deviation } from './report.ts';
+import type { Deviation } from '../contract/bring-in.ts';
 import type { Work } from './work.ts';
 
 /** Vertices of the difference that are measured at most. */

@@ -1,4 +1,5 @@
 import { Problem } from '../../solver/problem/problem.ts';
+import type { Note } from '../contract/bring-in.ts';
 import { LIMITS, type Work } from './work.ts';
 
 /**
@@ -43,14 +44,6 @@ export interface Track {
   readonly closed: boolean;
   /** Full width at the start and at the end of each edge, in twos; empty where it has none. */
   readonly widths: Float64Array;
-}
-
-/** Something in the file that did not become part of the drawing. */
-export interface Note {
-  readonly what: string;
-  readonly count: number;
-  /** Line or byte of the first one. */
-  readonly where: string;
 }
 
 /** Gathers a drawing, within bounds. */

@@ -1,7 +1,7 @@
 import { Problem } from '../../solver/problem/problem.ts';
+import type { Role } from '../contract/bring-in.ts';
 import type { Drawing, DrawnLayer, Vertices } from './drawing.ts';
 import type { Frame } from './recognise/plane.ts';
-import type { Role } from './settings.ts';
 
 /** Kept free around a drawing that has no edge of its own, nm. */
 const MARGIN = 2_000_000;
