@@ -1,8 +1,9 @@
 import { useEffect, useRef } from 'react';
 import { findPart } from '../edits/parts.ts';
+import { HandOverPanel } from '../handover/hand-over-panel.tsx';
 import { usePage } from '../page/context.tsx';
 import { ChipPanel } from '../panels/chip-panel.tsx';
-import { HandOverPanel } from '../panels/hand-over-panel.tsx';
+
 import { KeysPanel } from '../panels/keys-panel.tsx';
 import { PlotsPanel } from '../panels/plots-panel.tsx';
 import { AboutPanel, HistoryPanel } from '../panels/program-panels.tsx';

@@ -47,7 +47,7 @@ export function programCommands(desk: Desk): Command[] {
       id: 'hand over',
       title: 'Hand over',
       keys: ['e'],
-      help: 'Take tables and the description out of the program.',
+      help: 'The fabrication note, the flow-split table, masks, tables and the description.',
       group: 'Chip',
       why: open,
       run: () => desk.view.patch({ panel: 'hand over' }),

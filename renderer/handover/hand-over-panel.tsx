@@ -2,9 +2,28 @@ import { saveDescription, saveText } from '../commands/files.ts';
 import { csvOf, tableOf } from '../ledger/tables.ts';
 import { usePage } from '../page/context.tsx';
 import { TABS } from '../state/view.ts';
+import { MaskPart } from './mask-part.tsx';
+import { NotePart, SplitPart } from './note-part.tsx';
 
-/** Tables and the description out of the program. */
+/** All that leaves the program for someone else's bench, in one place. */
 export function HandOverPanel() {
+  return (
+    <>
+      <NotePart />
+      <SplitPart />
+      <MaskPart />
+      <TablesPart />
+      <p className="soft small handed">
+        Pressurised glass, tubing and fittings can burst: respect their ratings and wear eye protection.
+        Resists, etchants and solvents: follow local safety rules and trained supervision. Not for diagnosis
+        or treatment. A computed pass is not evidence that cells live.
+      </p>
+    </>
+  );
+}
+
+/** Tables as they stand, and the description. */
+function TablesPart() {
   const { desk } = usePage();
   const save = (tab: (typeof TABS)[number]): void => {
     const { result, graph } = desk.solver.solved.get();
@@ -12,10 +31,8 @@ export function HandOverPanel() {
     void saveText(desk, csvOf(tableOf(tab, chip, result, graph)), `${chip.name} ${tab}.csv`, 'Table');
   };
   return (
-    <>
-      <p className="soft">
-        Each table as it stands, for a spreadsheet; the description for scripts and other windows.
-      </p>
+    <section aria-labelledby="handover-tables">
+      <h3 id="handover-tables">Tables and description</h3>
       <ul className="nexts">
         {TABS.map((tab) => (
           <li key={tab}>
@@ -32,10 +49,6 @@ export function HandOverPanel() {
           </button>
         </li>
       </ul>
-      <p className="soft small">
-        Pressurised glass, tubing and fittings can burst: respect their ratings and wear eye protection. Not
-        for diagnosis or treatment. A computed pass is not evidence that cells live.
-      </p>
-    </>
+    </section>
   );
 }
