@@ -1,14 +1,16 @@
 import { type Accuracy, DEFAULT_ACCURACY, PREVIEW_ACCURACY } from './cell/cell.ts';
 import type { Chip } from './chip/chip.ts';
+import type { Graph } from './chip/graph.ts';
 import type { Result } from './chip/result.ts';
-import { fluidOf } from './fluid/fluid.ts';
+import { type Fluid, fluidOf } from './fluid/fluid.ts';
 import { placeCells } from './lump/cells.ts';
-import { checkDrives } from './lump/floating.ts';
+import { checkDrives, type DriveCheck } from './lump/floating.ts';
 import { cellLayout, idealLayout, type Layout } from './lump/layout.ts';
-import { lump } from './lump/lump.ts';
+import { type Lumped, lump } from './lump/lump.ts';
 import { settleThinning } from './lump/thinning.ts';
 import { emptyMemory, type Memory } from './memory.ts';
 import type { Gradient, Target } from './network/sensitivity.ts';
+import type { NetworkSolution } from './network/spec.ts';
 import { withMaking } from './report/making.ts';
 import { report } from './report/report.ts';
 
@@ -30,11 +32,7 @@ export interface SolveOptions {
  * @param memory what may be kept between solves of a chip that is being edited
  */
 export function solve(chip: Chip, options: SolveOptions = {}, memory: Memory = emptyMemory()): Result {
-  const fluid = fluidOf(chip.fluid);
-  const graph = memory.graph(chip);
-  const drives = checkDrives(chip, graph, fluid.density);
-  const layout = options.junctions === 'ideal' ? idealLayout(graph) : solvedLayout(chip, options, memory);
-  const { lumped, flow } = settleThinning(lump(chip, graph, layout, fluid, memory.lumps), memory.network);
+  const { graph, fluid, drives, lumped, flow } = networkOf(chip, options, memory);
   const depends = (targets: readonly Target[]): Gradient[] | null => memory.gradients(lumped, flow, targets);
   const slopes = (targets: readonly Target[]): Gradient[] | null => memory.slopes(lumped, flow, targets);
   return withMaking(
@@ -42,6 +40,25 @@ export function solve(chip: Chip, options: SolveOptions = {}, memory: Memory = e
     { chip, graph, lumped, flow },
     slopes,
   );
+}
+
+/** A chip's network with its flows, and what it was made from. */
+export interface Networked {
+  readonly graph: Graph;
+  readonly fluid: Fluid;
+  readonly drives: DriveCheck;
+  readonly lumped: Lumped;
+  readonly flow: NetworkSolution;
+}
+
+/** The first part of `solve`: pressures and flows, before anything is reported of them. */
+export function networkOf(chip: Chip, options: SolveOptions, memory: Memory): Networked {
+  const fluid = fluidOf(chip.fluid);
+  const graph = memory.graph(chip);
+  const drives = checkDrives(chip, graph, fluid.density);
+  const layout = options.junctions === 'ideal' ? idealLayout(graph) : solvedLayout(chip, options, memory);
+  const settled = settleThinning(lump(chip, graph, layout, fluid, memory.lumps), memory.network);
+  return { graph, fluid, drives, ...settled };
 }
 
 function solvedLayout(chip: Chip, options: SolveOptions, memory: Memory): Layout {

@@ -132,7 +132,7 @@ export interface CellResult {
   readonly pressures?: readonly number[];
   /** Bound of the relative error of the peak, where there is one. */
   readonly peakError?: number;
-  /** Of the peak, as of the channel that carries most through the cell. */
+  /** Of the peak, as of the channels around the cell. */
   readonly making?: Making;
   /** Where limits are given: the fastest stretching inside, and viscous dissipation per volume, W/m^3. */
   readonly stretch?: StretchResult;

@@ -8,21 +8,24 @@ const LEAST = 1e-6;
  * What sources do together to a figure, each with its tolerance used up: all against one, and the root of the sum
  * of their squares, which is as likely to hold as the tolerances are (independent errors, to first order).
  *
- * @param by relative change by each source
+ * @param by relative change by source s
  */
-export function bandOf(by: Float64Array, sources: readonly Source[]): Making {
-  let [worst, squares, chief] = [0, 0, -1];
-  for (let s = 0; s < by.length; s += 1) {
-    const size = Math.abs(by[s]);
+export function bandOf(by: (s: number) => number, sources: readonly Source[]): Making {
+  let [worst, squares, most, chief] = [0, 0, 0, -1];
+  for (let s = 0; s < sources.length; s += 1) {
+    const size = Math.abs(by(s));
     worst += size;
     squares += size * size;
-    if (size > (chief < 0 ? 0 : Math.abs(by[chief]))) chief = s;
+    if (size > most) {
+      most = size;
+      chief = s;
+    }
   }
   if (worst < LEAST || chief < 0) return { worst: 0, likely: 0 };
   return {
     worst,
     likely: Math.sqrt(squares),
-    chief: { ...sources[chief], part: (by[chief] * by[chief]) / squares },
+    chief: { ...sources[chief], part: (most * most) / squares },
   };
 }
 

@@ -10,15 +10,15 @@ import { innerFlows, insideOf } from './inside.ts';
 import { knownSlopes, type Slope, type Slopes } from './slopes.ts';
 import type { Reach, Sources } from './sources.ts';
 
-/** A relative change for each source with its tolerance used up: pairs of source and change. */
-export type Change = readonly { readonly source: number; readonly by: number }[];
+/** A relative change for each source with its tolerance used up. */
+type Change = readonly { readonly source: number; readonly by: number }[];
 
 /** What the tolerances do to each part of the network, before any flow is asked for. */
 export interface Effects {
   /** Fall of each duct's flow at its own pressure drop, relative (of its resistance, where that is constant). */
-  readonly ducts: readonly Change[];
+  readonly ducts: Changes;
   /** Peak wall shear of each reported stretch at a given flow. */
-  readonly shear: readonly Change[];
+  readonly shear: Changes;
   /** Relative change of that shear per relative change of the flow: 1 where the resistance is constant. */
   readonly shearByFlow: Float64Array;
   readonly cells: readonly CellEffects[];
@@ -51,8 +51,29 @@ const changeOf = (slope: Slope, depth: readonly Reach[], width: readonly Reach[]
   })),
 ];
 
-const scaled = (change: Change, factor: number): Change =>
-  factor === 1 ? change : change.map(({ source, by }) => ({ source, by: by * factor }));
+/** The changes of many parts, packed: every adjoint flow goes over all of them. */
+interface Changes {
+  readonly count: number;
+  /** Adds `factor` times the changes of part `e` to what each source does. */
+  add(e: number, by: Float64Array, factor: number): void;
+}
+
+function changesOf(list: readonly Change[]): Changes {
+  const start = new Int32Array(list.length + 1);
+  list.forEach((change, e) => {
+    start[e + 1] = start[e] + change.length;
+  });
+  const flat = list.flat();
+  const source = Int32Array.from(flat, (one) => one.source);
+  const amount = Float64Array.from(flat, (one) => one.by);
+  return {
+    count: list.length,
+    add(e, by, factor) {
+      if (factor === 0) return;
+      for (let k = start[e]; k < start[e + 1]; k += 1) by[source[k]] += factor * amount[k];
+    },
+  };
+}
 
 /** Sums of powers: a ln x + b ln y. */
 const plus = (a: Slope, b: Slope, factor: number): Slope => ({
@@ -80,7 +101,7 @@ export function effectsOf(net: Net, sources: Sources): Effects {
     return changeOf(resistance, depth, width, h);
   });
   const cells = lumped.cells.flatMap((_, index) => cellEffects(net, sources, index));
-  return { ducts, shear, shearByFlow, cells };
+  return { ducts: changesOf(ducts), shear: changesOf(shear), shearByFlow, cells };
 }
 
 function stretchSlopes({ chip, graph }: Net, { piece: index, width }: Pick<Stretch, 'piece' | 'width'>) {
@@ -170,11 +191,7 @@ function cellEffects({ chip, graph, lumped, flow }: Net, sources: Sources, index
 export function moved(net: Net, effects: Effects, gradient: Gradient, count: number): Float64Array {
   const by = new Float64Array(count);
   const { ducts, cells } = effects;
-  for (let e = 0; e < ducts.length; e += 1) {
-    const slope = gradient.byResistance[e];
-    if (slope === 0) continue;
-    for (const { source, by: change } of ducts[e]) by[source] += slope * change;
-  }
+  for (let e = 0; e < ducts.count; e += 1) ducts.add(e, by, gradient.byResistance[e]);
   for (const { block, depth, inner, flows } of cells) {
     const { nodes, matrix } = net.lumped.spec.blocks[block];
     const n = nodes.length;
@@ -199,9 +216,4 @@ export function moved(net: Net, effects: Effects, gradient: Gradient, count: num
     });
   }
   return by;
-}
-
-/** Adds a relative change to what sources do to a figure relative to itself. */
-export function add(by: Float64Array, change: Change, factor = 1): void {
-  for (const { source, by: amount } of scaled(change, factor)) by[source] += amount;
 }

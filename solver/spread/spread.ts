@@ -1,7 +1,7 @@
 import type { Making, MakingOfChip, MakingOfPort } from '../chip/result.ts';
 import type { Gradient, Target } from '../network/sensitivity.ts';
 import { bandOf, widerOf } from './band.ts';
-import { add, type Effects, effectsOf, moved, type Net } from './effects.ts';
+import { type Effects, effectsOf, moved, type Net } from './effects.ts';
 import { hasTolerances, type Sources, sourcesOf } from './sources.ts';
 
 /**
@@ -27,7 +27,7 @@ export interface StretchMaking {
 }
 
 /** Stretches times ducts up to which every stretch is reckoned; above, those with the highest shear only. */
-const EVERY = 1e6;
+const EVERY = 1e5;
 const HIGHEST = 32;
 /** Ports times ducts beyond which nothing is. */
 const MOST_WORK = 4e6;
@@ -125,15 +125,17 @@ function portBands(
 ): (MakingOfPort | null)[] {
   const bands = chip.ports.map((): MakingOfPort | null => null);
   driven.forEach(({ port, q }, i) => {
-    const byFlow = moves[i].map((by) => by / q);
-    const byShare = byFlow.map((by, s) => by - inflow[s]);
-    bands[port] = { flow: bandOf(byFlow, all), share: bandOf(byShare, all) };
+    const by = moves[i];
+    bands[port] = {
+      flow: bandOf((s) => by[s] / q, all),
+      share: bandOf((s) => by[s] / q - inflow[s], all),
+    };
   });
   imposed.forEach(({ port }, i) => {
     const pressure = Math.abs(portPressure[port]);
     if (!(pressure > 0) || lumped.portNode[port] < 0) return;
-    const by = moves[driven.length + i].map((change) => change / pressure);
-    bands[port] = { ...bands[port]!, pressure: bandOf(by, all) };
+    const by = moves[driven.length + i];
+    bands[port] = { ...bands[port]!, pressure: bandOf((s) => by[s] / pressure, all) };
   });
   return bands;
 }
@@ -150,23 +152,21 @@ function stretchBands(
   const own = new Map<number, Float64Array>();
   stretches.forEach((e, i) => {
     const q = flow.ductFlow[e];
-    const byFlow = moves[i].map((by) => by / q);
-    const byShear = byFlow.map((by) => by * effects.shearByFlow[e]);
-    add(byShear, effects.shear[e]);
+    const by = moves[i];
+    const factor = effects.shearByFlow[e] / q;
+    const byShear = by.map((change) => change * factor);
+    effects.shear.add(e, byShear, 1);
     own.set(e, byShear);
     bands[e] = {
-      flow: bandOf(byFlow, all),
-      share: bandOf(
-        byFlow.map((by, s) => by - inflow[s]),
-        all,
-      ),
-      shear: peakWallShear[e] === null ? NOTHING : bandOf(byShear, all),
+      flow: bandOf((s) => by[s] / q, all),
+      share: bandOf((s) => by[s] / q - inflow[s], all),
+      shear: peakWallShear[e] === null ? NOTHING : bandOf((s) => byShear[s], all),
     };
   });
   return { bands, cells: cellBands(lumped, flow, all, own) };
 }
 
-/** A cell's peak goes with the shear in the channel that carries most through it. */
+/** A cell's peak goes with the shear in the channels around it, each as far as it carries what goes through. */
 function cellBands(
   lumped: Net['lumped'],
   flow: Net['flow'],
@@ -179,14 +179,16 @@ function cellBands(
   });
   return lumped.cells.map(({ spec, solution }) => {
     if (!solution) return null;
-    let most: { readonly e: number; readonly q: number } | null = null;
+    const by = new Float64Array(all.length);
+    let carried = 0;
     for (const face of spec.faces) {
-      for (const e of ducts.get(face.node) ?? []) {
-        const q = Math.abs(flow.ductFlow[e]);
-        if (lumped.stretches[e].piece === face.piece && q > (most?.q ?? 0)) most = { e, q };
-      }
+      const e = ducts.get(face.node)?.find((index) => lumped.stretches[index].piece === face.piece);
+      const theirs = e === undefined ? undefined : own.get(e);
+      if (e === undefined || !theirs) continue;
+      const q = Math.abs(flow.ductFlow[e]);
+      carried += q;
+      for (let s = 0; s < by.length; s += 1) by[s] += q * theirs[s];
     }
-    const by = most && own.get(most.e);
-    return by ? bandOf(by, all) : null;
+    return carried > 0 ? bandOf((s) => by[s] / carried, all) : null;
   });
 }

@@ -106,6 +106,8 @@ export const TABLE: Readonly<Record<string, Room>> = {
       'solver/checks',
     ],
   },
+  // The made chip: stands on the whole solver, and nothing of the solver on it.
+  'solver/asbuilt': { ours: ['solver'] },
   db: { ours: ['solver'], packages: ['better-sqlite3', 'zod'], node: true },
   main: {
     ours: ['main', 'db', 'solver'],
