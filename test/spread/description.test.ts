@@ -2,8 +2,9 @@ import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import type { Chip, Tolerance } from '../../solver/chip/chip.ts';
 import { readDescription } from '../../solver/chip/description.ts';
-import { readChip } from '../../solver/chip/description-json.ts';
+
 import { writeDescription } from '../../solver/chip/description-write.ts';
+import { readChip } from '../../solver/chip/schema-chip.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { chipOf, line } from '../checks/chips.ts';
 

@@ -87,7 +87,9 @@ describe('ideal junctions: every share, flow, pressure and peak shear, seeded sa
         madeOnce(chip, () => normal() / 2),
         { junctions: 'ideal' },
       );
-      asked.forEach(({ of, nominal }, k) => seen[k]!.push(of(made)! / nominal));
+      asked.forEach(({ of, nominal }, k) => {
+        seen[k]!.push(of(made)! / nominal);
+      });
     }
     // Twice the deviation of so many samples is known to about 1/√(2 samples) of itself: four of those are allowed,
     // and two hundredths for what is beyond the first order.
