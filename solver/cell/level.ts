@@ -1,11 +1,12 @@
 import type { Mesh } from '../mesh/mesh.ts';
+import { carryPressure } from './carry.ts';
 import type { CellChecks, CellFields } from './cell.ts';
 import { type DepthModes, standardModes } from './depth.ts';
 import { analysePlane, factorPlane, type PlaneSymbolic, type StokesFactors } from './factors.ts';
 import { HALF } from './flow-field.ts';
 import { assemblePlane, faceLoads, type Plane } from './plane.ts';
 import { portMatrix } from './port-matrix.ts';
-import { faceDrives, type StokesFields, solveStokes } from './stokes.ts';
+import { faceDrives, type StokesFields, type StokesGuess, solveStokes } from './stokes.ts';
 import { wallTraction } from './wall-traction.ts';
 
 /** One mesh, ready to be solved with any number of modes. */
@@ -29,10 +30,18 @@ export interface LevelSolution {
   readonly checks: CellChecks;
 }
 
-/** Solves all face patterns on one mesh (depth 1, viscosity 1). */
-export function solveLevel(level: Level, modes: number, tolerance: number): LevelSolution {
+/**
+ * Solves all face patterns on one mesh (depth 1, viscosity 1).
+ * @param like a solution of the same shape on another mesh or with other modes, to begin from
+ */
+export function solveLevel(
+  level: Level,
+  modes: number,
+  tolerance: number,
+  like?: LevelSolution,
+): LevelSolution {
   const factors = factorPlane(level.plane, level.symbolic, standardModes(modes), HALF);
-  return iterate(level, modes, factors, tolerance);
+  return iterate(level, modes, factors, tolerance, undefined, like && carried(like, level));
 }
 
 /** Goes on with a solution to a tighter tolerance. */
@@ -46,13 +55,21 @@ function iterate(
   factors: StokesFactors,
   tolerance: number,
   from?: StokesFields,
+  guess?: StokesGuess,
 ): LevelSolution {
   const { plane, loads } = level;
   const depth = standardModes(modes);
   const drives = faceDrives(depth, loads.slice(0, -1));
-  const flow = solveStokes(plane, depth, HALF, factors, drives, tolerance, from);
+  const flow = solveStokes(plane, depth, HALF, factors, drives, tolerance, from, guess);
   const { matrix, checks } = portMatrix(plane, depth, HALF, loads, flow);
   return { level, modes, factors, flow, matrix, checks };
+}
+
+/** The pressures of a solution at the corners of another mesh. */
+function carried({ level, flow }: LevelSolution, to: Level): StokesGuess {
+  const { free, patterns } = flow;
+  if (level === to) return { pressure: flow.pressure, free };
+  return { pressure: carryPressure(level.plane.mesh, flow.pressure, patterns, to.plane.mesh), free };
 }
 
 /** The fields as they are kept. */

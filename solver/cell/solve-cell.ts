@@ -8,7 +8,7 @@ import { solveShape } from './solve-shape.ts';
 import { type CellStore, serves } from './store.ts';
 
 /** Part of every key: raise it whenever results change, so that what older versions kept is not used. */
-export const CELL_VERSION = 1;
+export const CELL_VERSION = 2;
 
 /**
  * Solves Stokes flow in a piece of the plan in three dimensions, or takes the solution of a copy of it

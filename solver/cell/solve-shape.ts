@@ -8,9 +8,11 @@ import { peakOfFields } from './peak.ts';
 import { planMesh } from './plan-mesh.ts';
 import { type CellShape, sharpCorners } from './shape.ts';
 
-/** Of the pressure iteration: where the result is kept, and where only errors are judged by it. */
+/** Of the pressure iteration where the result is kept. */
 const TIGHT = 2e-9;
-const LOOSE = 2e-5;
+/** Where only errors are judged by it: share of the flow's accuracy, and at most. */
+const LOOSE_SHARE = 0.02;
+const LOOSE_MOST = 1e-4;
 /** Coarseness of the mesh that judges at first, over that of the mesh judged. */
 const APART = 1.5;
 /** Errors go with these powers of the coarseness. */
@@ -19,6 +21,8 @@ const PEAK_ORDER = 2;
 const MOST_ROUNDS = 6;
 const MOST_MODES = 12;
 const FINEST = 0.25;
+/** Power of the refinement at fillets that the rest of the mesh takes part in. */
+const ELSEWHERE = 0.5;
 
 /**
  * Solves a shape of depth 1 on two meshes and with two numbers of depth modes, refines until the asked
@@ -28,6 +32,7 @@ export function solveShape(shape: CellShape, accuracy: Accuracy, where: string):
   const { faces } = shape;
   const sharp = sharpCorners(shape.loops).length > 0;
   const peak = sharp ? null : accuracy.peak;
+  const loose = Math.min(LOOSE_MOST, LOOSE_SHARE * accuracy.flow);
   const slender = 1 / Math.min(...faceWidths(shape));
   let modes = Math.max(peak === null ? 1 : peakModes(peak), flowModes(accuracy.flow, slender));
   let coarseness = 1.08 * (accuracy.flow / 0.005) ** (1 / FLOW_ORDER);
@@ -35,59 +40,58 @@ export function solveShape(shape: CellShape, accuracy: Accuracy, where: string):
   // Edges per quarter circle: peaks go with them, flows hardly.
   let arcs =
     peak === null ? 3 / coarseness : Math.max(3 / coarseness, 6 * (0.048 / peak) ** (1 / PEAK_ORDER));
-  const mesh = (times: number): Level => {
+  const level = (coarser: number, fewerArcs: number): Level => {
     const most = mostTriangles(modes, faces - 1);
-    return levelOf(planMesh(shape, coarseness * times, where, most, arcs / times), faces);
+    return within(
+      () => levelOf(planMesh(shape, coarseness * coarser, where, most, arcs / fewerArcs), faces),
+      where,
+    );
   };
 
-  let apart = APART;
-  let judge = solveLevel(
-    within(() => mesh(apart), where),
-    modes,
-    LOOSE,
-  );
-  let fine = solveLevel(
-    within(() => mesh(1), where),
-    modes,
-    LOOSE,
-  );
+  /** How far the two meshes lie apart: in coarseness, and along arcs. */
+  let apart: Apart = { mesh: APART, arcs: APART };
+  let judge = solveLevel(level(APART, APART), modes, loose);
+  let fine = solveLevel(level(1, 1), modes, loose, judge);
   let bounds: Bounds;
   for (let round = 1; ; round += 1) {
-    const fewer = modes > 1 ? solveLevel(judge.level, modes - 1, LOOSE) : null;
+    const fewer = modes > 1 ? solveLevel(judge.level, modes - 1, loose, judge) : null;
     bounds = {
-      flow: flowError(fine, judge, fewer, coarseness, apart, slender, faces),
-      peak: peak === null ? null : peakError(fine, judge, fewer, arcs, apart, slender, faces),
+      flow: flowError(fine, judge, fewer, coarseness, apart.mesh, slender, faces),
+      peak: peak === null ? null : peakError(fine, judge, fewer, arcs, apart.arcs, slender, faces),
     };
-    const over = (part: 'mesh' | 'modes', share: number): boolean =>
-      exceeds(bounds.flow, accuracy.flow, part, share) ||
-      (bounds.peak !== null && peak !== null && exceeds(bounds.peak, peak, part, share));
-    const moreModes = over('modes', 0.5);
-    const finer = over('mesh', 0.5);
-    if (!moreModes && !finer) break;
+    const flowOver = (part: keyof Bound): boolean => exceeds(bounds.flow, accuracy.flow, part, 0.5);
+    const peakOver = (part: keyof Bound): boolean =>
+      bounds.peak !== null && peak !== null && exceeds(bounds.peak, peak, part, 0.5);
+    const moreModes = flowOver('modes') || peakOver('modes');
     const room = coarseness / FINEST;
-    if (round === MOST_ROUNDS || (moreModes ? modes === MOST_MODES : room < 1.2)) break;
+    const finer = room >= 1.2 && (flowOver('mesh') || peakOver('mesh'));
+    if (!moreModes && !finer) break;
+    if (round === MOST_ROUNDS || (moreModes && modes === MOST_MODES)) break;
     if (moreModes) modes += 1;
-    if (finer && room >= 1.2) {
-      const flowStep = (bounds.flow.mesh / (0.55 * accuracy.flow)) ** (1 / FLOW_ORDER);
-      const peakStep =
-        bounds.peak && peak !== null ? (bounds.peak.mesh / (0.55 * peak)) ** (1 / PEAK_ORDER) : 1;
-      const step = Math.min(1.8, room, Math.max(1.2, flowStep, peakStep));
-      let level: Level;
+    if (finer) {
+      const wanted = (bound: Bound, asked: number, order: number): number =>
+        (bound.mesh / (0.55 * asked)) ** (1 / order);
+      const flowStep = flowOver('mesh') ? wanted(bounds.flow, accuracy.flow, FLOW_ORDER) : 1;
+      const peakStep = peakOver('mesh') ? wanted(bounds.peak!, peak!, PEAK_ORDER) : 1;
+      // A peak lies at a fillet: what it asks for is mostly asked of the mesh there.
+      const step = Math.min(1.8, room, Math.max(1.2, flowStep, peakStep ** ELSEWHERE));
+      const arcStep = Math.min(1.5, Math.max(step, 1.2, peakStep));
+      let next: Level;
       try {
-        level = within(() => mesh(1 / step), where);
+        next = level(1 / step, 1 / arcStep);
       } catch (error) {
         // What was reached is worth having.
         if (error instanceof Problem && error.kind === 'memory') break;
         throw error;
       }
       coarseness /= step;
-      arcs *= step;
-      apart = step;
-      judge = moreModes ? solveLevel(fine.level, modes, LOOSE) : fine;
-      fine = solveLevel(level, modes, LOOSE);
+      arcs *= arcStep;
+      apart = { mesh: step, arcs: arcStep };
+      judge = moreModes ? solveLevel(fine.level, modes, loose, fine) : fine;
+      fine = solveLevel(next, modes, loose, judge);
     } else {
-      judge = solveLevel(judge.level, modes, LOOSE);
-      fine = solveLevel(fine.level, modes, LOOSE);
+      judge = solveLevel(judge.level, modes, loose, judge);
+      fine = solveLevel(fine.level, modes, loose, fine);
     }
   }
   const kept = tighten(fine, TIGHT);
@@ -101,6 +105,11 @@ export function solveShape(shape: CellShape, accuracy: Accuracy, where: string):
     checks: kept.checks,
     fields: fieldsOf(kept),
   };
+}
+
+interface Apart {
+  readonly mesh: number;
+  readonly arcs: number;
 }
 
 /** Bounds of relative errors: from the plan mesh and from the number of depth modes. */

@@ -29,6 +29,13 @@ export interface StokesLoads {
   readonly divergence?: readonly Float64Array[];
 }
 
+/** Where the pressure iteration may begin: pressures of a like problem, and its `StokesFields.free`. */
+export interface StokesGuess {
+  /** As `StokesFields.pressure`; modes that are absent count as zero. */
+  readonly pressure: readonly Float64Array[];
+  readonly free: Float64Array;
+}
+
 /** Unit pressure on one face after the other, which drives mode k by its mean over the depth. */
 export function faceDrives(depth: DepthModes, loads: readonly Float64Array[]): StokesLoads {
   const size = loads.length > 0 ? loads[0].length : 0;
@@ -53,6 +60,7 @@ export function faceDrives(depth: DepthModes, loads: readonly Float64Array[]): S
  *
  * @param tolerance of the residual, see `worst` below
  * @param from a solution of the same problem to go on from
+ * @param guess where to begin otherwise; for face drives
  */
 export function solveStokes(
   plane: Plane,
@@ -62,6 +70,7 @@ export function solveStokes(
   loads: StokesLoads,
   tolerance: number,
   from?: StokesFields,
+  guess?: StokesGuess,
 ): StokesFields {
   const n = loads.patterns;
   const N = depth.count;
@@ -77,7 +86,8 @@ export function solveStokes(
   const w = make(across, count * n);
   const p = make(pressures, block);
   const r = make(pressures, block);
-  const z = make(pressures, block);
+  const zAll = new Float64Array(pressures * block);
+  const z = Array.from({ length: pressures }, (_, j) => zAll.subarray(j * block, (j + 1) * block));
   const d = make(pressures, block);
   const s = make(pressures, block);
   /** A^-1 B^T d of every mode. */
@@ -102,10 +112,8 @@ export function solveStokes(
     }
   };
   const precondition = () => {
-    for (let j = 0; j < pressures; j += 1) {
-      z[j].set(r[j]);
-      solve(factors.mass, z[j], n);
-    }
+    for (let j = 0; j < pressures; j += 1) z[j].set(r[j]);
+    solve(factors.mass, zAll, pressures * n);
     q.set(r[0]);
     for (let v = 0; v < corners; v += 1)
       if (factors.onFace[v]) for (let c = 0; c < n; c += 1) q[c * corners + v] = 0;
@@ -113,18 +121,37 @@ export function solveStokes(
     axpy(factors.shallow, q, z[0]);
   };
 
+  /** B^T of a pressure, on one mode. */
+  const pushAlong = (pressure: readonly Float64Array[], k: number, out: Float64Array): void => {
+    q.fill(0);
+    for (let j = 0; j < pressures; j += 1) axpy(depth.coupling[j * N + k], pressure[j], q);
+    gradient(plane, q, n, out);
+  };
+  const pushAcross = (pressure: readonly Float64Array[], m: number, out: Float64Array): void => {
+    q.fill(0);
+    for (let j = 1; j < pressures; j += 1)
+      axpy(depth.acrossCoupling[j * across + m] / halfDepth, pressure[j], q);
+    spread(plane, q, n, out);
+  };
+
+  const start = from?.pressure ?? guess?.pressure ?? [];
+  for (let j = 0; j < pressures; j += 1) if (start[j]) p[j].set(start[j]);
   for (let k = 0; k < N; k += 1) {
-    u[k].set(from?.inPlane[k] ?? loads.inPlane[k]);
-    if (!from) solve(factors.inPlane[k], u[k], 2 * n);
+    if (from) u[k].set(from.inPlane[k]);
+    else {
+      if (guess) pushAlong(p, k, u[k]);
+      axpy(1, loads.inPlane[k], u[k]);
+      solve(factors.inPlane[k], u[k], 2 * n);
+    }
   }
   for (let m = 0; m < across; m += 1) {
     if (from) w[m].set(from.across[m]);
-    else if (loads.across) {
-      w[m].set(loads.across[m]);
+    else if (loads.across || guess) {
+      if (guess) pushAcross(p, m, w[m]);
+      if (loads.across) axpy(1, loads.across[m], w[m]);
       solve(factors.across[m], w[m], n);
     }
   }
-  if (from) for (let j = 0; j < pressures; j += 1) p[j].set(from.pressure[j]);
   conserve(u, w, -1, r);
   if (loads.divergence) for (let j = 0; j < pressures; j += 1) axpy(1, loads.divergence[j], r[j]);
   precondition();
@@ -132,7 +159,7 @@ export function solveStokes(
   const rz = dots(r, z, n);
   const begun = from?.begun ?? rz.slice();
   // Where the start is divergence-free but for rounding there is nothing to iterate on.
-  const free = from?.free ?? dots(u, loads.inPlane, n);
+  const free = from?.free ?? guess?.free ?? dots(u, loads.inPlane, n);
   const acrossEnergy = dots(w, loads.across ?? [], n);
   const floor = free.map((value, c) => 1e-28 * Math.abs(value + acrossEnergy[c]));
   const alpha = new Float64Array(n);
@@ -154,15 +181,11 @@ export function solveStokes(
   while (worst() > tolerance && iterations < MOST_ITERATIONS) {
     iterations += 1;
     for (let k = 0; k < N; k += 1) {
-      q.fill(0);
-      for (let j = 0; j < pressures; j += 1) axpy(depth.coupling[j * N + k], d[j], q);
-      gradient(plane, q, n, du[k]);
+      pushAlong(d, k, du[k]);
       solve(factors.inPlane[k], du[k], 2 * n);
     }
     for (let m = 0; m < across; m += 1) {
-      q.fill(0);
-      for (let j = 1; j < pressures; j += 1) axpy(depth.acrossCoupling[j * across + m] / halfDepth, d[j], q);
-      spread(plane, q, n, dw[m]);
+      pushAcross(d, m, dw[m]);
       solve(factors.across[m], dw[m], n);
     }
     conserve(du, dw, 1, s);
