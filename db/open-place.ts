@@ -89,7 +89,7 @@ async function openSalvaged(settings: WorkplaceSettings, path: string, damage: D
   } catch (error) {
     const told = projectProblem(error, path);
     const remedy = newest ? `Go back to a backup.${backup}` : told.remedy;
-    throw new Problem(told.kind, told.what, told.where, remedy);
+    throw new Problem(told.kind, `${told.what} (${damage.reasons.join('; ')})`, told.where, remedy);
   }
   const opened = await openHere(settings, draft, true);
   const first = `"${basename(path)}" is damaged: ${damage.reasons.join('; ')}. It is left as it is; what could be read of it is here, as a draft.${backup}`;

@@ -148,36 +148,48 @@ export function compare(project: Project, model: Model, count: KillCount): void 
 /** A child that has started and waits for the word to begin. */
 interface Child {
   readonly process: ChildProcessByStdio<Writable, Readable, null>;
+  /** Resolves when it has said its first line, or has ended without one. */
+  readonly spoken: Promise<void>;
+  readonly ended: Promise<void>;
+  /** What it said so far. */
+  heard(): string;
 }
 
 function start(path: string, userData: string, seed: number): Child {
   const program = join(import.meta.dirname, 'kill-child.ts');
-  return {
-    process: spawn(process.execPath, [program, path, userData, String(seed)], {
-      stdio: ['pipe', 'pipe', 'inherit'],
-      env: { ...process.env, NODE_COMPILE_CACHE: join(tmpdir(), 'channelwright-compiled') },
-    }),
-  };
-}
-
-/** The lines of a child that is killed `after` ms from when it had the project open. */
-async function runUntilKilled({ process: child }: Child, after: number): Promise<string[]> {
+  const child = spawn(process.execPath, [program, path, userData, String(seed)], {
+    stdio: ['pipe', 'pipe', 'inherit'],
+    env: { ...process.env, NODE_COMPILE_CACHE: join(tmpdir(), 'channelwright-compiled') },
+  });
+  // Listened to from the start: one that ends while its predecessor is still at work is not waited for.
   let text = '';
-  const opened = new Promise<void>((done) => {
+  const spoken = new Promise<void>((done) => {
     child.stdout.on('data', (chunk: Buffer) => {
       text += chunk.toString();
       if (text.includes('\n')) done();
     });
     child.on('exit', () => done());
   });
-  const ended = new Promise<void>((done) => child.on('close', () => done()));
-  child.stdin.end('go\n');
-  await opened;
+  const ended = new Promise<void>((done) => {
+    child.on('close', () => done());
+    child.on('error', () => done());
+  });
+  // The word to begin may find it gone already; that shows as nothing heard.
+  child.stdin.on('error', () => undefined);
+  return { process: child, spoken, ended, heard: () => text };
+}
+
+/** The lines of a child that is killed `after` ms from when it had the project open. */
+async function runUntilKilled(child: Child, after: number): Promise<string[]> {
+  child.process.stdin.end('go\n');
+  await child.spoken;
   await wait(after);
-  child.kill('SIGKILL');
-  await ended;
-  const lines = text.split('\n');
+  child.process.kill('SIGKILL');
+  await child.ended;
+  const lines = child.heard().split('\n');
   // A line that was cut was not said.
   lines.pop();
+  if (lines.length === 0)
+    throw new Error('A child ended before it had the project open: see its error above.');
   return lines;
 }
