@@ -91,20 +91,38 @@ export interface DepthValues {
   readonly pressure: Float64Array;
 }
 
-export function depthValues(depth: DepthModes, s: number): DepthValues {
+/** Room for the values of N modes. */
+export function emptyDepthValues({ count, acrossLambda }: DepthModes): DepthValues {
+  const across = acrossLambda.length;
+  return {
+    inPlane: new Float64Array(count),
+    inPlaneSlope: new Float64Array(count),
+    across: new Float64Array(across),
+    acrossSlope: new Float64Array(across),
+    pressure: new Float64Array(count),
+  };
+}
+
+let legendre = new Float64Array(0);
+
+/** @param out overwritten and returned; new where absent */
+export function depthValues(
+  depth: DepthModes,
+  s: number,
+  out: DepthValues = emptyDepthValues(depth),
+): DepthValues {
   const N = depth.count;
   const A = depth.acrossLambda.length;
-  const P = new Float64Array(2 * N + 3);
+  const length = 2 * N + 3;
+  if (legendre.length < length) legendre = new Float64Array(length);
+  const P = legendre;
   P[0] = 1;
   P[1] = s;
-  for (let n = 1; n + 1 < P.length; n += 1) P[n + 1] = ((2 * n + 1) * s * P[n] - n * P[n - 1]) / (n + 1);
-  const out: DepthValues = {
-    inPlane: new Float64Array(N),
-    inPlaneSlope: new Float64Array(N),
-    across: new Float64Array(A),
-    acrossSlope: new Float64Array(A),
-    pressure: new Float64Array(N),
-  };
+  for (let n = 1; n + 1 < length; n += 1) P[n + 1] = ((2 * n + 1) * s * P[n] - n * P[n - 1]) / (n + 1);
+  out.inPlane.fill(0);
+  out.inPlaneSlope.fill(0);
+  out.across.fill(0);
+  out.acrossSlope.fill(0);
   for (let l = 0; l < N; l += 1) {
     const n = 2 * l + 1;
     for (let k = 0; k < N; k += 1) {

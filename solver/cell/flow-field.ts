@@ -27,32 +27,48 @@ export interface FlowField {
 /** Half of depth 1. */
 export const HALF = 0.5;
 
-/** The field alone, without its place: pressures on the faces of the solved copy. */
-export function mixFields(fields: CellFields, pressures: ArrayLike<number>): Omit<FlowField, 'placement'> {
-  const { mesh, modes } = fields;
+/** Velocity alone, without its place. */
+export type VelocityField = Pick<FlowField, 'mesh' | 'depth' | 'inPlane' | 'across'>;
+
+/** Sums of patterns, `count` arrays of `size`, by the pressures less that of the last face. */
+function mix(pressures: ArrayLike<number>, from: Float32Array, count: number, size: number): Float64Array[] {
   const patterns = pressures.length - 1;
-  const last = pressures[patterns];
-  const mix = (from: Float32Array, count: number, size: number): Float64Array[] =>
-    Array.from({ length: count }, (_, k) => {
-      const out = new Float64Array(size);
-      for (let c = 0; c < patterns; c += 1) {
-        const weight = pressures[c] - last;
-        const start = (c * count + k) * size;
-        for (let i = 0; i < size; i += 1) out[i] += weight * from[start + i];
-      }
-      return out;
-    });
-  const edges = mesh.boundaryTag.length;
-  const pressure = mix(fields.pressure, modes, mesh.vertexCount);
-  for (let i = 0; i < mesh.vertexCount; i += 1) pressure[0][i] += last;
+  return Array.from({ length: count }, (_, k) => {
+    const out = new Float64Array(size);
+    for (let c = 0; c < patterns; c += 1) {
+      const weight = pressures[c] - pressures[patterns];
+      const start = (c * count + k) * size;
+      for (let i = 0; i < size; i += 1) out[i] += weight * from[start + i];
+    }
+    return out;
+  });
+}
+
+/** @param pressures on the faces of the solved copy */
+export function mixVelocity(
+  { mesh, modes, inPlane, across }: CellFields,
+  pressures: ArrayLike<number>,
+): VelocityField {
   return {
     mesh,
     depth: standardModes(modes),
-    inPlane: mix(fields.inPlane, modes, 2 * mesh.nodeCount),
-    across: mix(fields.across, modes - 1, mesh.nodeCount),
+    inPlane: mix(pressures, inPlane, modes, 2 * mesh.nodeCount),
+    across: mix(pressures, across, modes - 1, mesh.nodeCount),
+  };
+}
+
+/** The field alone, without its place: pressures on the faces of the solved copy. */
+export function mixFields(fields: CellFields, pressures: ArrayLike<number>): Omit<FlowField, 'placement'> {
+  const { mesh, modes } = fields;
+  const edges = mesh.boundaryTag.length;
+  const pressure = mix(pressures, fields.pressure, modes, mesh.vertexCount);
+  const last = pressures[pressures.length - 1];
+  for (let i = 0; i < mesh.vertexCount; i += 1) pressure[0][i] += last;
+  return {
+    ...mixVelocity(fields, pressures),
     pressure,
-    wallAlong: mix(fields.wallAlong, modes, 3 * edges),
-    wallAcross: mix(fields.wallAcross, modes - 1, 3 * edges),
+    wallAlong: mix(pressures, fields.wallAlong, modes, 3 * edges),
+    wallAcross: mix(pressures, fields.wallAcross, modes - 1, 3 * edges),
   };
 }
 

@@ -1,8 +1,8 @@
 import { type Placement, toCaller } from '../cell/canonical.ts';
 import type { CellFields, CellSolution } from '../cell/cell.ts';
-import { type FlowField, mixFields, pressuresOf } from '../cell/flow-field.ts';
+import { mixVelocity, pressuresOf } from '../cell/flow-field.ts';
 import { type CellPattern, cellPattern } from './cell-pattern.ts';
-import { type CellScan, scanCell } from './cell-scan.ts';
+import { type CellScan, planArea, scanCell } from './cell-scan.ts';
 import { huggingTraces, type Trace } from './cell-trace.ts';
 import type { Crossing, Hugging } from './crossing.ts';
 import { doseOf, type History } from './laws.ts';
@@ -24,28 +24,67 @@ export interface FlowingCell {
   readonly fast: number;
 }
 
-/** What was worked out for one pattern of flow through one solved shape. */
-interface Known {
-  readonly field: FlowField;
-  readonly scan: CellScan;
-  /** By face (of the solved copy) and radius in depths. */
-  readonly traces: Map<string, readonly Trace[]>;
+/**
+ * What was worked out for one pattern of flow through one solved shape, when it was asked for. The field itself
+ * is not kept: it is large, and quickly mixed again.
+ */
+class Pattern {
+  readonly #fields: CellFields;
+  /** On the faces of the solved copy. */
+  readonly #pressures: Float64Array;
+  readonly #enters: readonly number[];
+  #scan: CellScan | null = null;
+  /** By radius in depths: of each face by which fluid enters. */
+  readonly #traces = new Map<number, ReadonlyMap<number, readonly Trace[]>>();
+
+  constructor(fields: CellFields, pressures: Float64Array, flow: ArrayLike<number>) {
+    this.#fields = fields;
+    this.#pressures = pressures;
+    this.#enters = Array.from(pressures.keys()).filter((face) => flow[face] > 0);
+  }
+
+  get scan(): CellScan {
+    this.#scan ??= scanCell(mixVelocity(this.#fields, this.#pressures));
+    return this.#scan;
+  }
+
+  /** Paths along the walls from a face. */
+  traces(face: number, radius: number): readonly Trace[] {
+    let found = this.#traces.get(radius);
+    if (!found) {
+      const field = mixVelocity(this.#fields, this.#pressures);
+      // Whoever asks for paths asks for strain too.
+      this.#scan ??= scanCell(field);
+      found = new Map(this.#enters.map((from) => [from, huggingTraces(field, from, radius)]));
+      this.#traces.set(radius, found);
+    }
+    return found.get(face) ?? [];
+  }
 }
 
-const known = new WeakMap<CellFields, Map<string, Known>>();
+interface Shape {
+  /** For depth 1. */
+  readonly volume: number;
+  readonly patterns: Map<string, Pattern>;
+}
+const known = new WeakMap<CellFields, Shape>();
 /** Patterns kept of one shape. */
 const MOST_PATTERNS = 400;
-const STANDING: Omit<Placement, 'face'> = { scale: 1, cos: 1, sin: 0, mirrored: false, x: 0, y: 0 };
 
-function patternOf(solution: CellSolution, fields: CellFields, pattern: CellPattern): Known {
-  let shapes = known.get(fields);
-  if (!shapes) {
-    shapes = new Map();
-    known.set(fields, shapes);
+function shapeOf(fields: CellFields): Shape {
+  let shape = known.get(fields);
+  if (!shape) {
+    shape = { volume: planArea(fields.mesh), patterns: new Map() };
+    known.set(fields, shape);
   }
-  let found = shapes.get(pattern.key);
+  return shape;
+}
+
+function patternOf(solution: CellSolution, fields: CellFields, { key, flow }: CellPattern): Pattern {
+  const { patterns } = shapeOf(fields);
+  let found = patterns.get(key);
   if (!found) {
-    if (shapes.size >= MOST_PATTERNS) shapes.clear();
+    if (patterns.size >= MOST_PATTERNS) patterns.clear();
     const [{ face, scale }] = solution.placements;
     const n = solution.faces;
     const matrix = new Float64Array(n * n);
@@ -54,10 +93,8 @@ function patternOf(solution: CellSolution, fields: CellFields, pattern: CellPatt
         matrix[i * n + j] = solution.portMatrix[face[i] * n + face[j]] / scale ** 3;
       }
     }
-    const mixed = mixFields(fields, pressuresOf(matrix, n, pattern.flow));
-    const field = { ...mixed, placement: { ...STANDING, face: Int32Array.from({ length: n }, (_, i) => i) } };
-    found = { field, scan: scanCell(field), traces: new Map() };
-    shapes.set(pattern.key, found);
+    found = new Pattern(fields, pressuresOf(matrix, n, flow), flow);
+    patterns.set(key, found);
   }
   return found;
 }
@@ -69,16 +106,19 @@ function patternOf(solution: CellSolution, fields: CellFields, pattern: CellPatt
  */
 export class CellPaths {
   readonly #cell: FlowingCell;
-  readonly #known: Known;
+  readonly #pattern: Pattern;
+  /** For depth 1. */
+  readonly #volume: number;
   readonly #placement: Placement;
   /** Pa and s that the solved copy's units stand for. */
   readonly #stress: number;
   readonly #time: number;
 
-  private constructor(cell: FlowingCell, through: number, known: Known) {
+  private constructor(cell: FlowingCell, through: number, pattern: Pattern, volume: number) {
     const [placement] = cell.solution.placements;
     this.#cell = cell;
-    this.#known = known;
+    this.#pattern = pattern;
+    this.#volume = volume;
     this.#placement = placement;
     this.#stress = (cell.viscosity * through) / placement.scale ** 3;
     this.#time = placement.scale ** 3 / through;
@@ -92,7 +132,8 @@ export class CellPaths {
     if (!pattern) return null;
     let through = 0;
     for (let i = 0; i < flow.length; i += 1) through += Math.max(0, flow[i]);
-    return new CellPaths(cell, through, patternOf(solution, solution.fields, pattern));
+    const { fields } = solution;
+    return new CellPaths(cell, through, patternOf(solution, fields, pattern), shapeOf(fields).volume);
   }
 
   /** Pa s */
@@ -102,11 +143,11 @@ export class CellPaths {
 
   /** m³ */
   get volume(): number {
-    return this.#known.scan.volume * this.#placement.scale ** 3;
+    return this.#volume * this.#placement.scale ** 3;
   }
 
   get stretch(): NonNullable<Crossing['stretch']> {
-    const { rate, stress, x, y } = this.#known.scan.stretch;
+    const { rate, stress, x, y } = this.#pattern.scan.stretch;
     const [px, py] = toCaller(this.#placement, x, y);
     const { origin } = this.#cell;
     return {
@@ -118,17 +159,20 @@ export class CellPaths {
 
   /** Of what comes in by one face and leaves by another (from 0, as the cell was given). */
   crossing(from: number, to: number): Crossing {
-    const { scan } = this.#known;
-    const time = scan.volume * this.#time;
+    const time = this.#volume * this.#time;
+    const pattern = this.#pattern;
+    const stretch = (): NonNullable<Crossing['stretch']> => this.stretch;
     const { slow, fast, peakWallShear } = this.#cell;
     return {
       time,
       fast: time / fast,
       slow: time / slow,
       peakWallShear,
-      stretch: this.stretch,
-      dose: (exponent) => doseOf(scan.spread, exponent) * this.#stress ** exponent * this.#time,
-      history: () => this.#scaled(scan.spread),
+      get stretch() {
+        return stretch();
+      },
+      dose: (exponent) => doseOf(pattern.scan.spread, exponent) * this.#stress ** exponent * this.#time,
+      history: () => this.#scaled(pattern.scan.spread),
       hugging: (diameter) => this.#hugging(from, to, diameter),
     };
   }
@@ -146,7 +190,7 @@ export class CellPaths {
     const radius = diameter / 2 / this.#placement.scale;
     if (Math.min(solution.depth, faceWidth[from], faceWidth[to]) < diameter) return null;
     const { face } = this.#placement;
-    const all = this.#traces(face.indexOf(from), radius);
+    const all = this.#pattern.traces(face.indexOf(from), radius);
     const there = all.filter((trace) => trace.to === face.indexOf(to));
     const paths = there.length > 0 ? there : all;
     if (paths.length === 0) return null;
@@ -159,16 +203,5 @@ export class CellPaths {
         worst(({ history }) => doseOf(history, exponent)) * this.#stress ** exponent * this.#time,
       history: () => this.#scaled(hardest.history),
     };
-  }
-
-  #traces(face: number, radius: number): readonly Trace[] {
-    const { field, traces } = this.#known;
-    const key = `${face} ${radius}`;
-    let found = traces.get(key);
-    if (!found) {
-      found = huggingTraces(field, face, radius);
-      traces.set(key, found);
-    }
-    return found;
   }
 }

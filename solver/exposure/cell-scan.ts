@@ -1,11 +1,11 @@
 import { depthValues } from '../cell/depth.ts';
-import { type FlowField, HALF } from '../cell/flow-field.ts';
+import { HALF, type VelocityField } from '../cell/flow-field.ts';
 import { quadratic, quadraticGradient } from '../cell/triangle.ts';
+import type { Mesh } from '../mesh/mesh.ts';
 import type { History } from './laws.ts';
 
 /** What the fluid in a cell meets, for depth 1, viscosity 1 and a flow of 1 through it. */
 export interface CellScan {
-  readonly volume: number;
   /** Volumes by their stress: ∫ stress^γ dV is the dose of this times the flow. */
   readonly spread: History;
   /** Largest rate at which a line along the flow grows, the scalar stress there, and where on the plan. */
@@ -32,108 +32,179 @@ const BINS = 256;
 /** Stresses below e^−14 of the largest are one. */
 const SPAN = 14;
 
-/** Looks through a field; a few milliseconds. */
-export function scanCell(field: Omit<FlowField, 'placement'>): CellScan {
+/** Volume of a cell of depth 1: the area of its plan. */
+export function planArea({ x, y, triangles }: Mesh): number {
+  const da = new Float64Array(6);
+  const db = new Float64Array(6);
+  let area = 0;
+  for (let t = 0; t < triangles.length / 6; t += 1) {
+    for (let q = 0; q < SIDES_A.length; q += 1) {
+      quadraticGradient(SIDES_A[q], SIDES_B[q], da, db);
+      let xa = 0;
+      let xb = 0;
+      let ya = 0;
+      let yb = 0;
+      for (let i = 0; i < 6; i += 1) {
+        const node = triangles[6 * t + i];
+        xa += da[i] * x[node];
+        xb += db[i] * x[node];
+        ya += da[i] * y[node];
+        yb += db[i] * y[node];
+      }
+      area += Math.abs(xa * yb - xb * ya) / (2 * SIDES_A.length);
+    }
+  }
+  return area;
+}
+
+/** Looks through a field: at each place of the plan the modes once, then level by level. */
+export function scanCell(field: VelocityField): CellScan {
   const { mesh, depth, inPlane, across } = field;
   const { triangles, nodeCount } = mesh;
   const count = triangles.length / 6;
   const [la, lb] = count <= SMALL ? [SIDES_A, SIDES_B] : [MIDDLE, MIDDLE];
-  const points = la.length;
-  const stress = new Float64Array(count * points * HEIGHTS.length);
+  const places = la.length;
+  const levels = HEIGHTS.map((height) => depthValues(depth, height));
+  const stress = new Float64Array(count * places * HEIGHTS.length);
   const volumes = new Float64Array(stress.length);
-  const nodal = Array.from({ length: 6 }, () => new Float64Array(nodeCount));
-  const [u, v, w, us, vs, ws] = nodal;
-  const n = new Float64Array(6 * points);
-  const da = new Float64Array(6 * points);
-  const db = new Float64Array(6 * points);
-  for (let q = 0; q < points; q += 1) {
-    quadraticGradient(la[q], lb[q], da.subarray(6 * q), db.subarray(6 * q));
-    quadratic(la[q], lb[q], n.subarray(6 * q));
-  }
-  let whole = 0;
+  const n = la.map((_, q) => {
+    const values = new Float64Array(6);
+    quadratic(la[q], lb[q], values);
+    return values;
+  });
+  const alongA = la.map(() => new Float64Array(6));
+  const alongB = la.map(() => new Float64Array(6));
+  for (let q = 0; q < places; q += 1) quadraticGradient(la[q], lb[q], alongA[q], alongB[q]);
+  /** By mode: u, its slopes along x and y, v, its slopes; then w and its slopes. */
+  const plane = new Float64Array(6 * inPlane.length);
+  const up = new Float64Array(3 * across.length);
+  const [gx, gy] = [new Float64Array(6), new Float64Array(6)];
   let top = 0;
-  const stretch = { rate: 0, stress: 0, x: 0, y: 0 };
   let at = 0;
-  for (let level = 0; level < HEIGHTS.length; level += 1) {
-    const modes = depthValues(depth, HEIGHTS[level]);
-    for (const values of nodal) values.fill(0);
-    for (let k = 0; k < inPlane.length; k += 1) {
-      const value = modes.inPlane[k];
-      const slope = modes.inPlaneSlope[k] / HALF;
-      const field2 = inPlane[k];
-      for (let i = 0; i < nodeCount; i += 1) {
-        u[i] += value * field2[i];
-        v[i] += value * field2[nodeCount + i];
-        us[i] += slope * field2[i];
-        vs[i] += slope * field2[nodeCount + i];
+  const stretch = { rate: 0, stress: 0, x: 0, y: 0 };
+  for (let t = 0; t < count; t += 1) {
+    for (let q = 0; q < places; q += 1) {
+      const da = alongA[q];
+      const db = alongB[q];
+      let xa = 0;
+      let xb = 0;
+      let ya = 0;
+      let yb = 0;
+      let px = 0;
+      let py = 0;
+      for (let i = 0; i < 6; i += 1) {
+        const node = triangles[6 * t + i];
+        const x = mesh.x[node];
+        const y = mesh.y[node];
+        px += n[q][i] * x;
+        py += n[q][i] * y;
+        xa += da[i] * x;
+        xb += db[i] * x;
+        ya += da[i] * y;
+        yb += db[i] * y;
       }
-    }
-    for (let m = 0; m < across.length; m += 1) {
-      const value = modes.across[m];
-      const slope = modes.acrossSlope[m] / HALF;
-      for (let i = 0; i < nodeCount; i += 1) {
-        w[i] += value * across[m][i];
-        ws[i] += slope * across[m][i];
+      const det = xa * yb - xb * ya;
+      for (let i = 0; i < 6; i += 1) {
+        gx[i] = (da[i] * yb - db[i] * ya) / det;
+        gy[i] = (db[i] * xa - da[i] * xb) / det;
       }
-    }
-    for (let t = 0; t < count; t += 1) {
-      for (let q = 0; q < points; q += 1) {
-        let [xa, xb, ya, yb, px, py] = [0, 0, 0, 0, 0, 0];
-        let [u0, v0, w0, ua, ub, va, vb, wa, wb, uz, vz, wz] = [0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0];
-        for (let i = 0; i < 6; i += 1) {
-          const node = triangles[6 * t + i];
-          const a = da[6 * q + i];
-          const b = db[6 * q + i];
-          const c = n[6 * q + i];
-          const x = mesh.x[node];
-          const y = mesh.y[node];
-          px += c * x;
-          py += c * y;
-          xa += a * x;
-          xb += b * x;
-          ya += a * y;
-          yb += b * y;
-          u0 += c * u[node];
-          v0 += c * v[node];
-          w0 += c * w[node];
-          ua += a * u[node];
-          ub += b * u[node];
-          va += a * v[node];
-          vb += b * v[node];
-          wa += a * w[node];
-          wb += b * w[node];
-          uz += c * us[node];
-          vz += c * vs[node];
-          wz += c * ws[node];
+      gather(inPlane, nodeCount, triangles, t, n[q], gx, gy, plane);
+      gather(across, 0, triangles, t, n[q], gx, gy, up);
+      for (let level = 0; level < levels.length; level += 1) {
+        const modes = levels[level];
+        let u = 0;
+        let v = 0;
+        let w = 0;
+        let ux = 0;
+        let uy = 0;
+        let uz = 0;
+        let vx = 0;
+        let vy = 0;
+        let vz = 0;
+        let wx = 0;
+        let wy = 0;
+        let wz = 0;
+        for (let k = 0; k < inPlane.length; k += 1) {
+          const value = modes.inPlane[k];
+          const slope = modes.inPlaneSlope[k] / HALF;
+          u += value * plane[6 * k];
+          ux += value * plane[6 * k + 1];
+          uy += value * plane[6 * k + 2];
+          uz += slope * plane[6 * k];
+          v += value * plane[6 * k + 3];
+          vx += value * plane[6 * k + 4];
+          vy += value * plane[6 * k + 5];
+          vz += slope * plane[6 * k + 3];
         }
-        const det = xa * yb - xb * ya;
-        const ux = (ua * yb - ub * ya) / det;
-        const uy = (ub * xa - ua * xb) / det;
-        const vx = (va * yb - vb * ya) / det;
-        const vy = (vb * xa - va * xb) / det;
-        const wx = (wa * yb - wb * ya) / det;
-        const wy = (wb * xa - wa * xb) / det;
+        for (let m = 0; m < across.length; m += 1) {
+          const value = modes.across[m];
+          w += value * up[3 * m];
+          wx += value * up[3 * m + 1];
+          wy += value * up[3 * m + 2];
+          wz += (modes.acrossSlope[m] / HALF) * up[3 * m];
+        }
         const shear = (uy + vx) ** 2 + (uz + wx) ** 2 + (vz + wy) ** 2;
         const scalar = Math.sqrt(2 * (ux * ux + vy * vy + wz * wz) + shear);
-        const volume = (2 * HALF * SHARES[level] * det) / (2 * points);
         stress[at] = scalar;
-        volumes[at] = volume;
+        volumes[at] = (2 * HALF * SHARES[level] * Math.abs(det)) / (2 * places);
         at += 1;
-        whole += volume;
         top = Math.max(top, scalar);
-        const square = u0 * u0 + v0 * v0 + w0 * w0;
+        const square = u * u + v * v + w * w;
         if (!(square > 0)) continue;
         const along =
-          u0 * (u0 * ux + v0 * (uy + vx) + w0 * (uz + wx)) + v0 * (v0 * vy + w0 * (vz + wy)) + w0 * w0 * wz;
-        if (along <= stretch.rate * square) continue;
-        stretch.rate = along / square;
-        stretch.stress = scalar;
-        stretch.x = px;
-        stretch.y = py;
+          u * u * ux + v * v * vy + w * w * wz + u * v * (uy + vx) + u * w * (uz + wx) + v * w * (vz + wy);
+        if (along > stretch.rate * square) {
+          stretch.rate = along / square;
+          stretch.stress = scalar;
+          stretch.x = px;
+          stretch.y = py;
+        }
       }
     }
   }
-  return { volume: whole, spread: binned(stress, volumes, top), stretch };
+  return { spread: binned(stress, volumes, top), stretch };
+}
+
+/** Of each mode at a place of a triangle: its value and slopes, and those of its second component where `second` > 0. */
+function gather(
+  modes: readonly Float64Array[],
+  second: number,
+  triangles: Int32Array,
+  t: number,
+  n: Float64Array,
+  gx: Float64Array,
+  gy: Float64Array,
+  out: Float64Array,
+): void {
+  const stride = second > 0 ? 6 : 3;
+  for (let k = 0; k < modes.length; k += 1) {
+    const values = modes[k];
+    let a = 0;
+    let ax = 0;
+    let ay = 0;
+    let b = 0;
+    let bx = 0;
+    let by = 0;
+    for (let i = 0; i < 6; i += 1) {
+      const node = triangles[6 * t + i];
+      const value = values[node];
+      a += n[i] * value;
+      ax += gx[i] * value;
+      ay += gy[i] * value;
+      if (second === 0) continue;
+      const other = values[second + node];
+      b += n[i] * other;
+      bx += gx[i] * other;
+      by += gy[i] * other;
+    }
+    out[stride * k] = a;
+    out[stride * k + 1] = ax;
+    out[stride * k + 2] = ay;
+    if (second === 0) continue;
+    out[stride * k + 3] = b;
+    out[stride * k + 4] = bx;
+    out[stride * k + 5] = by;
+  }
 }
 
 /** Volumes gathered by the logarithm of their stress, each bin with the mean of its own. */

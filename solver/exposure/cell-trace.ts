@@ -1,8 +1,6 @@
-import { depthValues } from '../cell/depth.ts';
-import { type FlowField, HALF } from '../cell/flow-field.ts';
-import { type Locator, locate, locatorOf, type Place } from '../cell/locate.ts';
-import { emptySample, type Sample, sampleAt } from '../cell/sample.ts';
+import { HALF, type VelocityField } from '../cell/flow-field.ts';
 import type { Mesh } from '../mesh/mesh.ts';
+import { CellReader } from './cell-reader.ts';
 import type { History } from './laws.ts';
 
 /** A path through a cell of depth 1, viscosity 1 and a flow of 1 through it. */
@@ -15,9 +13,9 @@ export interface Trace {
 }
 
 /** Steps of a path, in sizes of the triangle that it is in. */
-const STEP = 0.5;
+const STEP = 1;
 const SHORTEST = 0.01;
-const LONGEST = 0.5;
+const LONGEST = 1;
 const MOST_STEPS = 3000;
 /** What a start is moved in from its face. */
 const INSIDE = 1e-4;
@@ -27,7 +25,7 @@ const INSIDE = 1e-4;
  * lid at five places across, along both side walls at two heights. The field is followed as fluid follows
  * it; only floor and lid keep the ball at its distance.
  */
-export function huggingTraces(field: FlowField, face: number, radius: number): Trace[] {
+export function huggingTraces(field: VelocityField, face: number, radius: number): Trace[] {
   const walk = walker(field, radius);
   const line = faceLine(field.mesh, face + 1);
   const length = line.length;
@@ -85,70 +83,72 @@ function faceLine(mesh: Mesh, tag: number): { readonly length: number; at(along:
   };
 }
 
-/** Follows the field by fourth-order Runge-Kutta steps in path length. */
-function walker(field: FlowField, radius: number): (x: number, y: number, s: number) => Trace | null {
+/**
+ * Follows the field by fourth-order Runge-Kutta steps in path length; the time of a step by Simpson's rule on
+ * the slowness.
+ */
+function walker(field: VelocityField, radius: number): (x: number, y: number, s: number) => Trace | null {
   const { mesh } = field;
-  const locator: Locator = locatorOf(mesh);
-  const place: Place = { triangle: -1, la: 0, lb: 0 };
-  const sample: Sample = emptySample();
+  const reader = new CellReader(field);
   const most = Math.max(0, 1 - radius / HALF);
-  const sizes = triangleSizes(mesh);
-  const read = (x: number, y: number, s: number): boolean => {
-    if (!locate(locator, x, y, place)) return false;
-    sampleAt(field, place, depthValues(field.depth, s), sample);
-    return true;
-  };
-  const speed = (): number => Math.hypot(sample.velocity[0], sample.velocity[1], sample.velocity[2]);
   const slope = [new Float64Array(3), new Float64Array(3), new Float64Array(3), new Float64Array(3)];
-  /** Direction of the field at a place, into slope[k]. */
-  const direction = (x: number, y: number, s: number, k: number): boolean => {
-    if (!read(x, y, Math.min(most, Math.max(-most, s)))) return false;
-    const v = speed();
-    if (!(v > 0)) return false;
-    slope[k][0] = sample.velocity[0] / v;
-    slope[k][1] = sample.velocity[1] / v;
-    slope[k][2] = sample.velocity[2] / v / HALF;
-    return true;
+  /** Direction of the field at a place, into slope[k]; its speed, 0 where there is none. */
+  const direction = (x: number, y: number, s: number, k: number): number => {
+    if (!reader.read(x, y, Math.min(most, Math.max(-most, s)))) return 0;
+    const { speed } = reader;
+    slope[k][0] = reader.u / speed;
+    slope[k][1] = reader.v / speed;
+    slope[k][2] = reader.w / speed / HALF;
+    return speed;
   };
   const next = new Float64Array(3);
-  const step = (p: Float64Array, length: number): boolean => {
+  /** From p to `next`; the speed in the middle, 0 where the path leaves the cell. */
+  const step = (p: Float64Array, length: number): number => {
     const [a, b, c, d] = slope;
     const half = length / 2;
-    if (!direction(p[0] + half * a[0], p[1] + half * a[1], p[2] + half * a[2], 1)) return false;
-    if (!direction(p[0] + half * b[0], p[1] + half * b[1], p[2] + half * b[2], 2)) return false;
-    if (!direction(p[0] + length * c[0], p[1] + length * c[1], p[2] + length * c[2], 3)) return false;
+    if (!direction(p[0] + half * a[0], p[1] + half * a[1], p[2] + half * a[2], 1)) return 0;
+    const middle = direction(p[0] + half * b[0], p[1] + half * b[1], p[2] + half * b[2], 2);
+    if (!middle) return 0;
+    if (!direction(p[0] + length * c[0], p[1] + length * c[1], p[2] + length * c[2], 3)) return 0;
     for (let i = 0; i < 3; i += 1) next[i] = p[i] + (length / 6) * (a[i] + 2 * b[i] + 2 * c[i] + d[i]);
     next[2] = Math.min(most, Math.max(-most, next[2]));
-    return read(next[0], next[1], next[2]);
+    return middle;
   };
   return (x, y, s) => {
     const p = Float64Array.of(x, y, Math.min(most, s));
-    if (!direction(p[0], p[1], p[2], 0)) return null;
+    let speed = direction(p[0], p[1], p[2], 0);
+    if (!speed) return null;
     const stress: number[] = [];
     const time: number[] = [];
+    let before = reader.strain();
     let whole = 0;
-    let peak = sample.strainRate;
-    let [before, speedBefore] = [sample.strainRate, speed()];
+    let peak = before;
     let reach = 0;
+    // What the step left off at before may be larger than what is left to the face.
+    const start = slope[0].slice();
     for (let count = 0; count < MOST_STEPS; count += 1) {
-      let length = Math.min(LONGEST, Math.max(SHORTEST, STEP * sizes[place.triangle]));
+      let length = Math.min(LONGEST, Math.max(SHORTEST, STEP * reader.size));
       reach = length;
-      let ok = false;
-      for (let halving = 0; halving < 6 && !ok; halving += 1) {
-        ok = step(p, length);
-        if (!ok) length /= 2;
+      let middle = 0;
+      let now = 0;
+      start.set(slope[0]);
+      for (let halving = 0; halving < 6 && !now; halving += 1) {
+        middle = step(p, length);
+        if (middle) now = direction(next[0], next[1], next[2], 0);
+        if (now) break;
+        slope[0].set(start);
+        length /= 2;
       }
-      if (!ok) break;
-      const now = speed();
-      const dt = (2 * length) / (speedBefore + now);
+      if (!now) break;
+      const dt = (length / 6) * (1 / speed + 4 / middle + 1 / now);
+      const strain = reader.strain();
       whole += dt;
       time.push(dt);
-      stress.push((before + sample.strainRate) / 2);
-      peak = Math.max(peak, sample.strainRate);
-      before = sample.strainRate;
-      speedBefore = now;
+      stress.push((before + strain) / 2);
+      peak = Math.max(peak, strain);
+      before = strain;
+      speed = now;
       p.set(next);
-      if (!direction(p[0], p[1], p[2], 0)) break;
     }
     return {
       to: faceNear(mesh, p[0], p[1], 2 * reach),
@@ -157,16 +157,6 @@ function walker(field: FlowField, radius: number): (x: number, y: number, s: num
       peak,
     };
   };
-}
-
-/** Root of the area of each triangle. */
-function triangleSizes(mesh: Mesh): Float64Array {
-  return Float64Array.from({ length: mesh.triangles.length / 6 }, (_, t) => {
-    const [a, b, c] = mesh.triangles.subarray(6 * t, 6 * t + 3);
-    const abx = mesh.x[b] - mesh.x[a];
-    const aby = mesh.y[b] - mesh.y[a];
-    return Math.sqrt(Math.abs(abx * (mesh.y[c] - mesh.y[a]) - (mesh.x[c] - mesh.x[a]) * aby) / 2);
-  });
 }
 
 /** Face (from 0) within reach of a place; −1 where there is none. */
