@@ -3,6 +3,7 @@ import '@fontsource-variable/literata/wght.css';
 import './look/page.css';
 import './look/frame.css';
 import './look/parts.css';
+import './look/rows.css';
 import './look/start.css';
 import { createRoot } from 'react-dom/client';
 import { createClient } from '../main/contract/client.ts';

@@ -11,6 +11,7 @@ import { figure, lengthFigure } from '../words/figure.ts';
 import { lengthened } from './lengthen.ts';
 import { MakerCard } from './maker-card.tsx';
 import { PartName } from './part-name.tsx';
+import { PlacesField } from './place-fields.tsx';
 import { PlaceFindings } from './place-findings.tsx';
 import { QuantityField } from './quantity-field.tsx';
 import { SectionPicture } from './section-picture.tsx';
@@ -110,6 +111,7 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
           />
         )}
         <PartName kind="channel" id={channel.id} />
+        <PlacesField part={{ kind: 'channel', value: channel }} />
       </div>
       <dl className="fields">
         <Results solved={solved} chip={chip} />

@@ -9,6 +9,7 @@ import type { PartValue } from '../tools/tool.ts';
 import { capital, counted, figure, lengthFigure } from '../words/figure.ts';
 import { MakerCard } from './maker-card.tsx';
 import { PartName } from './part-name.tsx';
+import { PlaceFields, PlacesField } from './place-fields.tsx';
 import { PlaceFindings } from './place-findings.tsx';
 import { QuantityField } from './quantity-field.tsx';
 import { ChoiceField, Figure } from './text-field.tsx';
@@ -66,6 +67,7 @@ export function ChamberCard({ chamber }: { readonly chamber: Chamber }) {
           />
         )}
         <PartName kind="chamber" id={chamber.id} />
+        <PlacesField part={{ kind: 'chamber', value: chamber }} />
       </div>
       <dl className="fields">
         <Figure label="Floor" figure={figure(size, 'area')} />
@@ -97,6 +99,7 @@ export function ViaCard({ via }: { readonly via: Via }) {
           unit="um"
           onAccept={(value) => put({ diameter: nm(value) }, `set the diameter of ${via.id}`)}
         />
+        <PlaceFields part={{ kind: 'via', value: via }} />
         {([0, 1] as const).map((end) => (
           <ChoiceField
             key={end}

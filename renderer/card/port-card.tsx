@@ -1,10 +1,13 @@
 import type { Drive, Port } from '../../solver/chip/chip.ts';
+import type { Pump, Reservoir } from '../../solver/chip/running.ts';
 import { usePage } from '../page/context.tsx';
 import { useAnswer } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { figure, lengthFigure } from '../words/figure.ts';
 import { PartName } from './part-name.tsx';
+import { PlaceFields } from './place-fields.tsx';
 import { PlaceFindings } from './place-findings.tsx';
+import { PumpFields, ReservoirFields } from './pump-fields.tsx';
 import { QuantityField } from './quantity-field.tsx';
 import { TargetFields } from './target-fields.tsx';
 import { ChoiceField, Figure } from './text-field.tsx';
@@ -31,6 +34,19 @@ export function PortCard({ port }: { readonly port: Port }) {
   const solved = result?.ports.find((found) => found.id === port.id);
   const put = (change: Partial<Port>, label: string): string | null =>
     desk.attempt({ label, put: [{ kind: 'port', value: { ...port, ...change } }] });
+  /** A part with some of its fields left out, where they are null. */
+  const replace = (
+    change: { readonly pump?: Pump | null; readonly reservoir?: Reservoir | null },
+    label: string,
+  ) => {
+    const value: { -readonly [K in keyof Port]: Port[K] } = { ...port };
+    for (const key of ['pump', 'reservoir'] as const) {
+      if (change[key] === undefined) continue;
+      if (change[key] === null) delete value[key];
+      else Object.assign(value, { [key]: change[key] });
+    }
+    return desk.attempt({ label, put: [{ kind: 'port', value }] });
+  };
   const drive = (next: Drive): string | null => put({ drive: next }, `set the drive of ${port.id}`);
   return (
     <>
@@ -71,6 +87,7 @@ export function PortCard({ port }: { readonly port: Port }) {
             onAccept={(head) => drive({ kind: 'head', head })}
           />
         )}
+        <PlaceFields part={{ kind: 'port', value: port }} />
         <QuantityField
           label="Hole"
           value={port.diameter / 1e9}
@@ -135,6 +152,11 @@ export function PortCard({ port }: { readonly port: Port }) {
         )}
         <PartName kind="port" id={port.id} />
       </div>
+      <PumpFields pump={port.pump} onPump={(pump) => replace({ pump }, `set the pump of ${port.id}`)} />
+      <ReservoirFields
+        reservoir={port.reservoir}
+        onReservoir={(reservoir) => replace({ reservoir }, `set the reservoir of ${port.id}`)}
+      />
       <dl className="fields">
         {solved ? (
           <>

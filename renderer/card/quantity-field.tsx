@@ -12,6 +12,8 @@ export interface QuantityFieldProps {
   readonly unit?: string;
   /** Null keeps it, a sentence refuses it. */
   readonly onAccept: (value: number) => string | null;
+  /** It may be left empty: then this is done, and `value` is null. */
+  readonly onEmpty?: () => string | null;
   /** Why it cannot be typed into. */
   readonly fixed?: string;
 }
@@ -20,7 +22,7 @@ export interface QuantityFieldProps {
  * A number to edit. Nonsense stays in the field, is explained beside it, and is never applied. Up, Down
  * and the wheel go by one in the second digit; with Shift by ten.
  */
-export function QuantityField({ label, value, kind, unit, onAccept, fixed }: QuantityFieldProps) {
+export function QuantityField({ label, value, kind, unit, onAccept, onEmpty, fixed }: QuantityFieldProps) {
   const id = useId();
   const shownUnit = unit ?? unitFor(value ?? 0, kind);
   const own = value === null ? '' : typed(value, kind, shownUnit);
@@ -44,6 +46,7 @@ export function QuantityField({ label, value, kind, unit, onAccept, fixed }: Qua
       return '';
     }
     if (text.trim() === '' && value === null) return '';
+    if (text.trim() === '' && onEmpty) return onEmpty() ?? '';
     const parsed = parseQuantity(text, kind, shownUnit);
     if (!parsed.ok) return `${label} ${parsed.what} ${parsed.remedy}`;
     return onAccept(ratioToNumber(parsed.exact)) ?? '';
@@ -75,7 +78,7 @@ export function QuantityField({ label, value, kind, unit, onAccept, fixed }: Qua
         ref={input}
         id={id}
         value={text}
-        placeholder={value === null ? 'they differ' : undefined}
+        placeholder={value === null ? (onEmpty ? 'not said' : 'they differ') : undefined}
         readOnly={Boolean(fixed)}
         title={fixed}
         spellCheck={false}

@@ -58,6 +58,8 @@ export function toEdit(chip: Chip, alteration: Alteration): ChipEdit {
     'limits',
     'process',
     'accepted',
+    'rating',
+    'assay',
   ] as const)
     if (set[key] !== undefined) changes.push({ kind: 'set', key, value: set[key] } as Change);
   for (const { ref, to } of alteration.rename ?? []) {

@@ -1,4 +1,5 @@
 import { QuantityField } from '../card/quantity-field.tsx';
+import { ChoiceField } from '../card/text-field.tsx';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import type { Whole } from '../tools/tool.ts';
@@ -6,6 +7,7 @@ import { FluidFields } from './fluid-fields.tsx';
 import { LayerFields } from './layer-fields.tsx';
 import { LimitFields } from './limit-fields.tsx';
 import { ProcessFields } from './process-fields.tsx';
+import { RunningFields } from './running-fields.tsx';
 
 /** The chip as a whole: size, layers, fluid, limits. */
 export function ChipPanel() {
@@ -34,11 +36,24 @@ export function ChipPanel() {
             set('set the height of the chip', { outline: { ...chip.outline, height: nm(value) } })
           }
         />
+        <ChoiceField
+          label="Lengths written in"
+          value={chip.lengthUnit}
+          choices={[
+            ['nm', 'nm'],
+            ['um', 'µm'],
+            ['mm', 'mm'],
+            ['cm', 'cm'],
+            ['m', 'm'],
+          ]}
+          onAccept={(lengthUnit) => set('set the unit of the description', { lengthUnit })}
+        />
       </section>
       <LayerFields />
       <FluidFields fluid={chip.fluid} onFluid={(fluid) => set('change the fluid', { fluid })} />
       <LimitFields />
       <ProcessFields process={chip.process} onProcess={(process) => set('change the process', { process })} />
+      <RunningFields chip={chip} onSet={set} />
       <NoteField note={chip.note} onNote={(note) => set('change the note', { note })} />
     </>
   );

@@ -1,6 +1,7 @@
 import { fluidOf } from '../../solver/fluid/fluid.ts';
 import type { FluidSpec, ShearModel } from '../../solver/fluid/spec.ts';
 import { QuantityField } from '../card/quantity-field.tsx';
+import { RowsField } from '../card/rows-field.tsx';
 import { ChoiceField } from '../card/text-field.tsx';
 import { figure } from '../words/figure.ts';
 
@@ -29,7 +30,7 @@ function first(choice: Choice, now: FluidSpec): FluidSpec {
     case 'casson':
       return { density: 1050, shear: SHEAR[choice] };
     case 'table':
-      return now;
+      return 'table' in now ? now : { temperature, table: measuredFirst(temperature) };
     case 'glycerol-water':
       return {
         name: choice,
@@ -43,6 +44,13 @@ function first(choice: Choice, now: FluidSpec): FluidSpec {
       return { name: choice, temperature: 310.15 };
   }
 }
+
+/** Two rows to be typed over: those of water, so that the first answer is no nonsense. */
+const measuredFirst = (temperature: number) =>
+  [temperature - 5, temperature + 5].map((at) => {
+    const { viscosity, density } = fluidOf({ name: 'water', temperature: at });
+    return { temperature: at, viscosity: viscosity ?? 1e-3, density };
+  });
 
 /** The fluid: one known by its source, or the user's own numbers. */
 export function FluidFields({
@@ -76,7 +84,7 @@ export function FluidFields({
           ['power-law', 'shear-thinning, power law'],
           ['carreau', 'shear-thinning, Carreau'],
           ['casson', 'with a yield stress, Casson'],
-          ...('table' in fluid ? [['table', 'as measured'] as const] : []),
+          ['table', 'as measured'],
         ]}
         onAccept={(choice) => tried(first(choice, fluid))}
       />
@@ -101,6 +109,27 @@ export function FluidFields({
                 ? { name: fluid.name, temperature: fluid.temperature, volumeFraction: share }
                 : { name: fluid.name, temperature: fluid.temperature, massFraction: share },
             )
+          }
+        />
+      )}
+      {'table' in fluid && (
+        <RowsField
+          label="Measured: temperature, viscosity, density"
+          columns={[
+            { name: 'temperature', kind: 'temperature', unit: 'degC' },
+            { name: 'viscosity', kind: 'viscosity', unit: 'mPa.s' },
+            { name: 'density', kind: 'density', unit: 'kg/m^3' },
+          ]}
+          rows={fluid.table.map((row) => [row.temperature, row.viscosity, row.density])}
+          onAccept={(rows) =>
+            tried({
+              ...fluid,
+              table: rows.map(([at, viscosity, density]) => ({
+                temperature: at!,
+                viscosity: viscosity!,
+                density: density!,
+              })),
+            })
           }
         />
       )}

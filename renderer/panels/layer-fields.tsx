@@ -1,9 +1,12 @@
 import type { Layer } from '../../solver/chip/chip.ts';
 import type { Profile, ProfileKind } from '../../solver/section/profile.ts';
 import { QuantityField } from '../card/quantity-field.tsx';
+import { RowsField } from '../card/rows-field.tsx';
 import { ChoiceField, TextField } from '../card/text-field.tsx';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
+import { RoofFields } from './roof-fields.tsx';
+import { ToleranceFields } from './tolerance-fields.tsx';
 
 const PROFILES: readonly (readonly [ProfileKind, string])[] = [
   ['rectangle', 'rectangle'],
@@ -12,6 +15,7 @@ const PROFILES: readonly (readonly [ProfileKind, string])[] = [
   ['circle', 'round bore'],
   ['ellipse', 'ellipse'],
   ['triangle', 'triangle'],
+  ['polygon', 'as measured'],
 ];
 
 /** The layers: depth, cross-section, corner radius. */
@@ -99,10 +103,8 @@ function OneLayer({
       <ChoiceField
         label="Cross-section"
         value={layer.profile.kind}
-        choices={layer.profile.kind === 'polygon' ? [...PROFILES, ['polygon', 'as measured']] : PROFILES}
-        onAccept={(kind) =>
-          onLayer({ ...layer, profile: firstProfile(kind, layer.profile) }, 'change the section')
-        }
+        choices={PROFILES}
+        onAccept={(kind) => onLayer({ ...layer, profile: firstProfile(kind, layer) }, 'change the section')}
       />
       {layer.profile.kind === 'trapezoid' && (
         <QuantityField
@@ -122,6 +124,27 @@ function OneLayer({
         unit="um"
         onAccept={(value) => onLayer({ ...layer, fillet: nm(value) }, 'set the fillet')}
       />
+      {layer.profile.kind === 'polygon' && (
+        <RowsField
+          label="Outline as measured, across and up"
+          columns={[
+            { name: 'across', kind: 'length', unit: 'um' },
+            { name: 'up', kind: 'length', unit: 'um' },
+          ]}
+          rows={layer.profile.points}
+          onAccept={(points) =>
+            onLayer(
+              {
+                ...layer,
+                profile: { kind: 'polygon', points: points as readonly (readonly [number, number])[] },
+              },
+              'change the section',
+            )
+          }
+        />
+      )}
+      <ToleranceFields layer={layer} onLayer={onLayer} />
+      <RoofFields layer={layer} onLayer={onLayer} />
       <TextField
         label="Name"
         value={layer.id}
@@ -131,7 +154,19 @@ function OneLayer({
   );
 }
 
-function firstProfile(kind: ProfileKind, now: Profile): Profile {
+/** As measured begins as a rectangle of the layer's depth, twice as wide, to be typed over. */
+function firstProfile(kind: ProfileKind, { profile, depth }: Layer): Profile {
+  if (kind === profile.kind) return profile;
   if (kind === 'trapezoid') return { kind, wallAngle: 85 };
-  return kind === 'polygon' ? now : ({ kind } as Profile);
+  if (kind !== 'polygon') return { kind };
+  const high = depth / 1e9;
+  return {
+    kind,
+    points: [
+      [-high, 0],
+      [high, 0],
+      [high, high],
+      [-high, high],
+    ],
+  };
 }

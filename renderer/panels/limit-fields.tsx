@@ -1,9 +1,11 @@
 import type { Limit } from '../../solver/chip/chip.ts';
 import { QuantityField } from '../card/quantity-field.tsx';
-import { ChoiceField, TextField } from '../card/text-field.tsx';
+import { TextField } from '../card/text-field.tsx';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
-import { figure } from '../words/figure.ts';
+import { LimitKindFields } from './limit-kind.tsx';
+import { LimitPlaceField } from './limit-place.tsx';
+import { ReferenceLimits } from './reference-limits.tsx';
 
 /** What cells bear. A computed pass is no evidence that they live: that is said here, where it is decided. */
 export function LimitFields() {
@@ -11,17 +13,17 @@ export function LimitFields() {
   const chip = useStore(desk.project)!.document.chip;
   const set = (label: string, limits: readonly Limit[]): string | null =>
     desk.attempt({ label, set: { limits } });
-  const add = (): void => {
-    let n = 1;
-    const nameOf = (): string => (n === 1 ? 'cells' : `cells ${n}`);
-    while (chip.limits.some((limit) => limit.name === nameOf())) n += 1;
-    set('add a limit', [...chip.limits, { name: nameOf(), shear: 1.5 }]);
+  const free = (stem: string): string => {
+    for (let n = 1; ; n += 1) {
+      const name = n === 1 ? stem : `${stem} ${n}`;
+      if (!chip.limits.some((limit) => limit.name === name)) return name;
+    }
   };
-  const places: readonly (readonly [string, string])[] = [
-    ['', 'the whole chip'],
-    ...chip.chambers.map((part) => [part.id, part.id] as const),
-    ...chip.channels.slice(0, 500).map((part) => [part.id, part.id] as const),
-  ];
+  const add = (limit: Limit): string | null => {
+    const why = set('add a limit', [...chip.limits, { ...limit, name: free(limit.name) }]);
+    if (why) desk.say(why);
+    return why;
+  };
   return (
     <section aria-label="Limits">
       <h3>What the cells bear</h3>
@@ -32,59 +34,27 @@ export function LimitFields() {
             chip.limits.map((old, k) => (k === i ? next : old)),
           );
         return (
-          <fieldset key={limit.name} className="fields">
+          // biome-ignore lint/suspicious/noArrayIndexKey: names change while they are typed, places do not
+          <fieldset key={i} className="fields">
             <legend>{limit.name}</legend>
             <TextField
               label="Name"
               value={limit.name}
               onAccept={(name) => (name ? put({ ...limit, name }) : 'A limit needs a name.')}
             />
-            {'shear' in limit ? (
-              <QuantityField
-                label="Wall shear at most"
-                value={limit.shear}
-                kind="stress"
-                unit="Pa"
-                onAccept={(shear) => put({ ...limit, shear })}
-              />
-            ) : 'floor' in limit ? (
-              <>
-                <QuantityField
-                  label="Floor at least"
-                  value={limit.floor[0]}
-                  kind="stress"
-                  unit="Pa"
-                  onAccept={(low) => put({ ...limit, floor: [low, limit.floor[1]] })}
-                />
-                <QuantityField
-                  label="Floor at most"
-                  value={limit.floor[1]}
-                  kind="stress"
-                  unit="Pa"
-                  onAccept={(high) => put({ ...limit, floor: [limit.floor[0], high] })}
-                />
-                <QuantityField
-                  label="On this much of it"
-                  value={limit.area}
-                  kind="share"
-                  unit="%"
-                  onAccept={(area) => put({ ...limit, area })}
-                />
-              </>
-            ) : (
-              <p className="soft">{'curve' in limit ? curveWords(limit.curve) : lawWords(limit)}</p>
-            )}
-            {typeof limit.where !== 'object' && (
-              <ChoiceField
-                label="Holds in"
-                value={limit.where ?? ''}
-                choices={places}
-                onAccept={(where) => {
-                  const { where: _, ...rest } = limit;
-                  put(where === '' ? (rest as Limit) : ({ ...rest, where } as Limit));
-                }}
-              />
-            )}
+            <LimitKindFields limit={limit} onLimit={put} />
+            <LimitPlaceField limit={limit} chip={chip} onLimit={put} />
+            <QuantityField
+              label="Diameter of the cells"
+              value={limit.cellDiameter ?? null}
+              kind="length"
+              unit="um"
+              onAccept={(cellDiameter) => put({ ...limit, cellDiameter })}
+              onEmpty={() => {
+                const { cellDiameter: _, ...rest } = limit;
+                return put(rest as Limit);
+              }}
+            />
             <button
               type="button"
               className="quiet"
@@ -100,19 +70,14 @@ export function LimitFields() {
           </fieldset>
         );
       })}
-      <button type="button" className="quiet" onClick={add}>
+      <button type="button" className="quiet" onClick={() => add({ name: 'cells', shear: 1.5 })}>
         Add a limit
       </button>
+      <ReferenceLimits onAdd={add} />
       <p className="soft small">
         Limits differ by cell, medium, passage, exposure and temperature. A computed pass is not evidence that
-        cells live: confirm it with your own.
+        cells live: confirm it with your own. Not for diagnosis or treatment.
       </p>
     </section>
   );
 }
-
-const curveWords = (curve: readonly (readonly [number, number])[]): string =>
-  `A stress for a time: ${curve.map(([time, stress]) => `${figure(stress, 'stress', { digits: 3 })} for ${figure(time, 'time', { digits: 2 })}`).join(', ')}.`;
-
-const lawWords = (limit: Extract<Limit, { law: unknown }>): string =>
-  `A damage law: ${limit.law.constant} τ^${limit.law.stress} t^${limit.law.time}, at most ${figure(limit.damage, 'share', { unit: '%', digits: 2 })} in ${limit.passes} ${limit.passes === 1 ? 'pass' : 'passes'}.`;

@@ -1,7 +1,8 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { FIGURE_FACE, type Palette, SIZES, TEXT_FACE } from '../look/tokens.ts';
-import { type Camera, type Size, toScreen } from './camera.ts';
+import { type Camera, type Size, toPlan, toScreen } from './camera.ts';
 import type { Room } from './room.ts';
+import type { Spatial } from './spatial.ts';
 import type { PlaceWords, PortWords } from './words.ts';
 
 /** px: a port's ring is never smaller. */
@@ -122,7 +123,14 @@ export function drawPlaceWords(
   size: Size,
   palette: Palette,
   room: Room,
+  spatial: Spatial,
 ): void {
+  /** How many runs of channels lie under a rectangle of the screen. */
+  const covered = (left: number, top: number, width: number, height: number): number => {
+    const [a, b] = toPlan(camera, size, [left, top + height]);
+    const [c, d] = toPlan(camera, size, [left + width, top]);
+    return spatial.runsIn({ left: a, bottom: b, right: c, top: d });
+  };
   for (const { at: plan, head, more, alarm } of words) {
     const at = toScreen(camera, size, plan);
     if (!onScreen(at, size, 20)) continue;
@@ -138,8 +146,15 @@ export function drawPlaceWords(
     const headWide = ctx.measureText(short).width;
     ctx.font = `${SIZES.label}px ${FIGURE_FACE}`;
     const wide = Math.max(headWide, ctx.measureText(rest).width);
-    const place = roomBeside(at, wide, 36, size, room);
+    const place = roomBeside(at, wide, 36, size, room, covered);
     if (!place) continue;
+    if (Math.min(Math.abs(place.top + 36 - at[1]), Math.abs(place.top - at[1])) > 20) {
+      ctx.lineWidth = 1;
+      ctx.beginPath();
+      ctx.moveTo(at[0], at[1] + (place.top > at[1] ? 11 : -11));
+      ctx.lineTo(place.right ? place.left + wide + 6 : place.left - 6, place.top + 18);
+      ctx.stroke();
+    }
     // a ground under the words, so that channels do not run through them
     ctx.globalAlpha = 0.86;
     ctx.fillStyle = palette.chip;
@@ -160,26 +175,33 @@ export function drawPlaceWords(
 const clip = (text: string, most: number): string =>
   text.length > most ? `${text.slice(0, most - 1)}…` : text;
 
+/** px: how far the words may stand from their place; beyond the first a line leads to them. */
+const FAR = [0, 34, 72] as const;
+
+/** The free place beside that covers least of what is drawn, near before far. */
 function roomBeside(
   [x, y]: readonly [number, number],
   wide: number,
   high: number,
   size: Size,
   room: Room,
+  covered: (left: number, top: number, width: number, height: number) => number,
 ): { readonly left: number; readonly top: number; readonly right: boolean } | null {
-  const places = [
-    { left: x - 18 - wide, top: y - high - 4, right: true },
-    { left: x + 18, top: y - high - 4, right: false },
-    { left: x - 18 - wide, top: y + 6, right: true },
-    { left: x + 18, top: y + 6, right: false },
-  ];
-  for (const place of places)
-    if (
-      place.left > 4 &&
-      place.left + wide < size.width - 4 &&
-      place.top > 4 &&
-      room.take(place.left - 4, place.top - 2, wide + 8, high + 4)
-    )
-      return place;
-  return null;
+  let best: { left: number; top: number; right: boolean } | null = null;
+  let least = Number.POSITIVE_INFINITY;
+  for (const [step, far] of FAR.entries())
+    for (const up of [true, false])
+      for (const right of [true, false]) {
+        const left = right ? x - 18 - wide : x + 18;
+        const top = up ? y - high - 4 - far : y + 6 + far;
+        const inside = left > 4 && left + wide < size.width - 4 && top > 4 && top + high < size.height - 4;
+        if (!inside || !room.free(left - 4, top - 2, wide + 8, high + 4)) continue;
+        const cost = 2 * covered(left - 4, top - 2, wide + 8, high + 4) + step;
+        if (cost < least) {
+          least = cost;
+          best = { left, top, right };
+        }
+      }
+  if (best) room.fill(best.left - 4, best.top - 2, wide + 8, high + 4);
+  return best;
 }

@@ -44,7 +44,7 @@ test('resistance stands at the pointer before any answer, and shear for a tellin
     [40 * mm, 2 * mm],
   ]);
   const lines = pointerFigures(teeChip(), [part], NOTHING);
-  expect(lines.map((line) => plain(line.name))).toEqual(['resistance', 'wall shear at 1 µL/min']);
+  expect(lines.map((line) => plain(line.name))).toEqual(['resistance', 'shear at 1 µL/min']);
   // R = 12 µ L / (w h³ (1 - 0.63 h/w)), good to about 1 % at h/w = 0.42 (Bruus, Theoretical Microfluidics, 2008)
   const expected = (12 * 0.89e-3 * 0.01) / (120e-6 * 50e-6 ** 3 * (1 - (0.63 * 50) / 120));
   const shown = Number(/([\d.]+)/.exec(lines[0]!.figure)![1]);

@@ -40,7 +40,7 @@ export function pointerFigures(chip: Chip, parts: readonly PartValue[], answer: 
     out.push({ name: 'wall shear', figure: figure(last.peakWallShear, 'stress', { digits: 3 }) });
   } else if (duct?.shear != null) {
     out.push({
-      name: `wall shear at ${figure(TELLING_FLOW, 'flow', { digits: 1 })}`,
+      name: `shear at ${figure(TELLING_FLOW, 'flow', { digits: 1, unit: 'uL/min' })}`,
       figure: figure(duct.shear * TELLING_FLOW, 'stress', { digits: 3 }),
     });
   }

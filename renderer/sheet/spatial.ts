@@ -97,6 +97,11 @@ export class Spatial {
     return [...seen].sort((a, b) => a - b);
   }
 
+  /** How many straight runs of channels, chambers and holes have boxes that meet `box`. */
+  runsIn(box: Box): number {
+    return this.tree.search(box.left, box.bottom, box.right, box.top).length;
+  }
+
   /** Parts that lie wholly within `box` (`whole`) or touch it, as kind and id. */
   partsIn(box: Box, wholly: boolean): { readonly kind: Part; readonly id: string }[] {
     const found = new Map<string, { kind: Part; id: string }>();

@@ -54,8 +54,8 @@ export interface Solver {
   readonly live: Store<Live | null>;
   load(chip: Chip, options: SolveOptions): void;
   edit(edit: ChipEdit, chip: Chip): void;
-  /** The chip as it would be, with the edit that would make it; null when the hand has let go. */
-  drag(would: { readonly edit: ChipEdit; readonly chip: Chip } | null): void;
+  /** The chip as it would be, with the edit that would make it and what is being drawn; null when the hand has let go. */
+  drag(would: { readonly edit: ChipEdit; readonly chip: Chip; readonly drawn?: string | null } | null): void;
   /** What would come of an edit. */
   attempt(edit: ChipEdit): Promise<Outcome>;
   /** Results of variants, in order as they come; returns how to stop. */
@@ -76,7 +76,7 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
   const solved = createStore<Solved>(NOTHING);
   const live = createStore<Live | null>(null);
   /** Chips as they would be, by number; empty when the hand has let go. */
-  const dragged = new Map<number, Chip>();
+  const dragged = new Map<number, { readonly chip: Chip; readonly drawn?: string | null }>();
   let graph: Graph | null = null;
   /** Chips asked about and not yet answered, by number. */
   const asked = new Map<number, Chip>();
@@ -118,7 +118,15 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
     if (news.kind === 'dragged') {
       const would = dragged.get(news.id);
       for (const id of dragged.keys()) if (id < news.id) dragged.delete(id);
-      if (would) live.set({ chip: would, graph, waiting: news.waiting, ...told(news.outcome) });
+      if (!would) return;
+      const { result, problem } = told(news.outcome);
+      live.set({
+        chip: would.chip,
+        graph,
+        waiting: news.waiting,
+        problem,
+        result: result && withoutOpenEnd(result, would.drawn),
+      });
       return;
     }
     // The same chip is answered again as its junctions come.
@@ -161,7 +169,7 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
     drag(would) {
       if (would) {
         const id = next();
-        dragged.set(id, would.chip);
+        dragged.set(id, would);
         thread.post({ kind: 'drag', id, edit: would.edit });
       } else if (dragged.size > 0) {
         dragged.clear();
@@ -194,6 +202,15 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
     },
     end: () => thread.end(),
   };
+}
+
+/** The end of a channel that is being drawn is where the hand is: that it leads nowhere yet is no finding. */
+function withoutOpenEnd(result: Result, drawn: string | null | undefined): Result {
+  if (!drawn) return result;
+  const findings = result.findings.filter(
+    ({ kind, where }) => kind !== 'dead-end' || where.replace(/#\d+$/, '') !== drawn,
+  );
+  return { ...result, findings };
 }
 
 const told = (outcome: Outcome): { readonly result: Result | null; readonly problem: Refused | null } =>

@@ -16,7 +16,7 @@ const MOST_CHANNELS = 5000;
 export function wouldBe(
   chip: Chip,
   parts: readonly PartValue[],
-): { readonly edit: ChipEdit; readonly chip: Chip } | null {
+): { readonly edit: ChipEdit; readonly chip: Chip; readonly drawn: string | null } | null {
   if (parts.length === 0 || chip.channels.length > MOST_CHANNELS) return null;
   const put = parts.map((part): PartValue => {
     if (part.kind !== 'channel') return part;
@@ -25,7 +25,8 @@ export function wouldBe(
   });
   try {
     const edit = toEdit(chip, { label: 'as it would be', put });
-    return { edit, chip: makeEdit(chip, edit).chip };
+    const drawn = parts.find((part) => part.value.id === '');
+    return { edit, chip: makeEdit(chip, edit).chip, drawn: drawn ? partId(chip, drawn) : null };
   } catch (error) {
     // there it could not stay; the hand goes on
     if (error instanceof Problem) return null;

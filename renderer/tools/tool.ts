@@ -14,7 +14,7 @@ export type PartValue =
 /** What is of the chip as a whole. */
 export type Whole = Partial<
   Pick<Chip, 'name' | 'note' | 'outline' | 'layers' | 'fluid' | 'targets' | 'limits' | 'lengthUnit'> &
-    Pick<TopOf, 'process' | 'accepted'>
+    Pick<TopOf, 'process' | 'accepted' | 'rating' | 'assay'>
 >;
 
 /** A wish to change the chip: parts to put (new, or in place of those that bear their ids), parts to drop. */

@@ -81,12 +81,20 @@ function Band({ margin }: { readonly margin: Extract<Margin, { kind: 'band' }> }
       <path className="tick" d={`M0 ${TOP + THICK / 2}H${WIDTH}`} opacity={0.25} />
       <rect className="bandfill" x={WIDTH / 2 - half} y={TOP} width={2 * half} height={THICK} />
       <path className="tick" d={`M${WIDTH / 2} ${TOP - 5}V${TOP + THICK + 5}`} />
-      <text x={Math.max(0, WIDTH / 2 - half)} y={33} textAnchor="middle" className={half > 30 ? '' : 'wide'}>
-        −{margin.label}
-      </text>
-      <text x={Math.min(WIDTH, WIDTH / 2 + Math.max(half, 36))} y={33} textAnchor="middle">
-        +{margin.label}
-      </text>
+      {half < 36 ? (
+        <text x={WIDTH / 2} y={33} textAnchor="middle">
+          ±{margin.label}
+        </text>
+      ) : (
+        <>
+          <text x={Math.max(0, WIDTH / 2 - half)} y={33} textAnchor={half > 80 ? 'start' : 'middle'}>
+            −{margin.label}
+          </text>
+          <text x={Math.min(WIDTH, WIDTH / 2 + half)} y={33} textAnchor={half > 80 ? 'end' : 'middle'}>
+            +{margin.label}
+          </text>
+        </>
+      )}
     </>
   );
 }

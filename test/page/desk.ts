@@ -19,9 +19,11 @@ export async function sit(
     readonly height?: number;
     readonly scheme?: 'light' | 'dark';
     readonly scale?: number;
+    /** Opened from the start. */
+    readonly files?: readonly string[];
   } = {},
 ): Promise<Sitting> {
-  const host = await startHost();
+  const host = await startHost(options.files);
   const browser = await launch();
   const context = await browser.newContext({
     viewport: { width: options.width ?? 1440, height: options.height ?? 900 },
@@ -44,7 +46,8 @@ export async function sit(
       strangers.push(url);
   });
   await page.goto(host.address);
-  await page.getByRole('heading', { name: 'Begin a chip' }).waitFor();
+  if (options.files) await page.locator('.frame').waitFor();
+  else await page.getByRole('heading', { name: 'Begin a chip' }).waitFor();
   return {
     page,
     context,
