@@ -25,16 +25,25 @@ function isEscaped(text: string, at: number): boolean {
 /** How many keys were kept of them: of a key that stands twice in one group only the last. */
 function keysKept(value: unknown): number {
   let count = 0;
-  const rest: unknown[] = [value];
+  const rest: object[] = [];
+  const look = (entry: unknown): void => {
+    if (typeof entry !== 'object' || entry === null) return;
+    // Numbers and points are most of what a long description holds, and they hold no keys.
+    if (Array.isArray(entry) && typeof entry[0] === 'number' && typeof entry.at(-1) !== 'object') {
+      if (entry.length <= 2 || entry.every((part) => typeof part !== 'object')) return;
+    }
+    rest.push(entry);
+  };
+  look(value);
   while (rest.length > 0) {
-    const next = rest.pop();
-    if (next === null || typeof next !== 'object') continue;
-    const inner: unknown[] = Array.isArray(next) ? next : Object.values(next);
-    if (!Array.isArray(next)) count += inner.length;
-    for (const entry of inner) {
-      // Points are most of what a long description holds, and they hold no keys.
-      const isPoint = Array.isArray(entry) && typeof entry[0] === 'number' && entry.length === 2;
-      if (typeof entry === 'object' && !(isPoint && typeof entry[1] === 'number')) rest.push(entry);
+    const next = rest.pop()!;
+    if (Array.isArray(next)) for (const entry of next) look(entry);
+    else {
+      // Of JSON.parse: own keys only, without a list made of them.
+      for (const key in next) {
+        count += 1;
+        look((next as Record<string, unknown>)[key]);
+      }
     }
   }
   return count;
