@@ -19,8 +19,8 @@ const FORMATS = [
 ] as const;
 const ENDINGS: Readonly<Record<MaskFormat, string>> = { dxf: 'dxf', gdsii: 'gds', svg: 'svg', pdf: 'pdf' };
 const FIELDS = [
-  ['dark-field', 'dark, channels clear'],
-  ['clear-field', 'clear, channels dark'],
+  ['dark-field', 'dark field'],
+  ['clear-field', 'clear field'],
 ] as const;
 const SIDES = [
   ['no', 'as drawn'],
@@ -295,7 +295,7 @@ export function MaskPart() {
         {says}
       </p>
       {report && (
-        <ul className="small">
+        <ul className="small cautions">
           {report.findings.map(({ where, says: found }) => (
             <li key={`${where} ${found}`}>{found}</li>
           ))}
@@ -321,5 +321,7 @@ function writtenWords({ files, placed }: Report): string {
     files.length === 1
       ? `Written to ${where}${chips}`
       : `${counted(files.length, 'file')} written${chips}, the first to ${where}`;
-  return `${what}; read back, it differs by ${figure(worst, 'share', { digits: 2, unit: '%' })} of what the chord error allows.`;
+  return worst === 0
+    ? `${what}; read back, it is the drawing.`
+    : `${what}; read back, it differs by ${figure(worst, 'share', { digits: 2, unit: '%' })} of what the chord error allows.`;
 }

@@ -1,5 +1,6 @@
 import bidiFactory from 'bidi-js';
 import { CHAINS, type Face, type FontFile, fontBytes } from './font-files.ts';
+import { unpackWoff } from './woff.ts';
 
 /**
  * Text as it is set: every sign in the first font of its face that has it, right-to-left runs in the
@@ -28,6 +29,11 @@ const RAISED = /[⁰¹²³⁴-⁹⁺⁻]/u;
 /** No glyph: controls, marks of direction, joiners of emoji. */
 const UNSEEN = /[\p{Cc}\p{Cf}\p{Zl}\p{Zp}]+/gu;
 
+const plainFont = (font: FontFile): Uint8Array => {
+  const bytes = fontBytes(font);
+  return font.file.endsWith('.woff') ? unpackWoff(bytes) : bytes;
+};
+
 /** Fonts already parsed, for every document of this process. */
 const parsed = new Map<string, object>();
 
@@ -51,7 +57,7 @@ export class Fonts {
       return known;
     }
     // pdfkit takes a parsed font too, which its types do not say, and keeps the one in use as `_font`
-    const source = (parsed.get(font.file) ?? fontBytes(font)) as PDFKit.Mixins.PDFFontSource;
+    const source = (parsed.get(font.file) ?? plainFont(font)) as PDFKit.Mixins.PDFFontSource;
     this.#doc.registerFont(font.file, source);
     this.#doc.font(font.file);
     const { font: inner } = (this.#doc as unknown as { _font: { font: Font } })._font;
