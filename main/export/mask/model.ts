@@ -120,7 +120,7 @@ export function maskModel(
     const box = boxOf([...plane.cavities, ...plane.marks, ...plane.outline, ...plane.lane]);
     return box ? [box] : [];
   });
-  if (boxes.length === 0) {
+  if (planes.every(({ cavities }) => cavities.length === 0)) {
     throw new Problem(
       'shape',
       'There is nothing to draw: the layers hold no cavity.',
