@@ -1,7 +1,7 @@
 import { toCaller } from './canonical.ts';
 import type { CellFields, CellSolution } from './cell.ts';
-import { depthValues } from './depth.ts';
-import { type FlowField, flowField, HALF, mixFields } from './flow-field.ts';
+import { depthValues, standardModes } from './depth.ts';
+import { HALF } from './flow-field.ts';
 
 /** The largest wall shear in a cell. */
 export interface PeakShear {
@@ -25,72 +25,119 @@ const LEVELS = 16;
  * were not kept.
  */
 export function peakShear(solution: CellSolution, pressures: ArrayLike<number>): PeakShear | null {
-  if (solution.sharp || solution.peakError === null) return null;
+  const { fields, peakError } = solution;
+  if (solution.sharp || peakError === null || !fields) return null;
   let best: PeakShear | null = null;
   for (const placement of solution.placements) {
-    const field = flowField(solution, pressures, placement);
-    if (!field) return null;
-    const found = largestWallShear(field);
+    const found = largestWallShear(
+      fields,
+      Float64Array.from(placement.face, (face) => pressures[face]),
+    );
     if (best && found.value <= best.value) continue;
     best = {
       value: found.value,
       at: toCaller(placement, found.x, found.y),
       place: found.place,
       height: found.height,
-      error: solution.peakError,
+      error: peakError,
     };
   }
   return best;
 }
 
-/** The same on one field, in the coordinates of the solved copy. */
-export function largestWallShear(field: Omit<FlowField, 'placement'>): {
-  value: number;
-  x: number;
-  y: number;
-  place: PeakShear['place'];
-  height: number;
-} {
-  const { mesh, depth, inPlane, wallAlong, wallAcross } = field;
-  const N = depth.count;
-  let most = 0;
-  let node = 0;
-  let place: PeakShear['place'] = 'floor and lid';
-  let height = 1;
+/** Shear of each face pattern at all places that are looked at; made once per shape. */
+interface WallTable {
+  /** patterns x 2 x nodeCount: along x and y, at floor and lid. */
+  readonly lid: Float32Array;
+  /** patterns x 2 x (LEVELS x edges): along the wall and up, at the middles of edges (they scatter least), level by level. */
+  readonly sides: Float32Array;
+}
+const tables = new WeakMap<CellFields, WallTable>();
 
+function tableOf(fields: CellFields, patterns: number): WallTable {
+  let table = tables.get(fields);
+  if (table) return table;
+  const { mesh, modes, inPlane, wallAlong, wallAcross } = fields;
+  const { nodeCount } = mesh;
+  const depth = standardModes(modes);
+  const edges = mesh.boundaryTag.length;
+  const lid = new Float32Array(patterns * 2 * nodeCount);
+  const sides = new Float32Array(patterns * 2 * LEVELS * edges);
   const { inPlaneSlope } = depthValues(depth, 1);
-  for (let i = 0; i < mesh.nodeCount; i += 1) {
-    let x = 0;
-    let y = 0;
-    for (let k = 0; k < N; k += 1) {
-      x += inPlaneSlope[k] * inPlane[k][i];
-      y += inPlaneSlope[k] * inPlane[k][mesh.nodeCount + i];
+  const levels = Array.from({ length: LEVELS }, (_, level) => depthValues(depth, level / LEVELS));
+  for (let c = 0; c < patterns; c += 1) {
+    for (let i = 0; i < 2 * nodeCount; i += 1) {
+      let sum = 0;
+      for (let k = 0; k < modes; k += 1)
+        sum += inPlaneSlope[k] * inPlane[(c * modes + k) * 2 * nodeCount + i];
+      lid[c * 2 * nodeCount + i] = sum / HALF;
     }
-    const square = (x * x + y * y) / (HALF * HALF);
-    if (square > most) {
-      most = square;
-      node = i;
-    }
-  }
-  for (let level = 0; level < LEVELS; level += 1) {
-    const s = level / LEVELS;
-    const values = depthValues(depth, s);
-    // Middles of edges: they scatter least.
-    for (let e = 2; e < wallAlong[0].length; e += 3) {
-      let along = 0;
-      let up = 0;
-      for (let k = 0; k < N; k += 1) along += values.inPlane[k] * wallAlong[k][e];
-      for (let m = 0; m < N - 1; m += 1) up += values.across[m] * wallAcross[m][e];
-      const square = along * along + up * up;
-      if (square > most) {
-        most = square;
-        node = mesh.boundary[e];
-        place = 'side wall';
-        height = s;
+    for (let level = 0; level < LEVELS; level += 1) {
+      const values = levels[level];
+      const at = c * 2 * LEVELS * edges + level * edges;
+      for (let e = 0; e < edges; e += 1) {
+        let along = 0;
+        let up = 0;
+        for (let k = 0; k < modes; k += 1)
+          along += values.inPlane[k] * wallAlong[(c * modes + k) * 3 * edges + 3 * e + 2];
+        for (let m = 0; m < modes - 1; m += 1)
+          up += values.across[m] * wallAcross[(c * (modes - 1) + m) * 3 * edges + 3 * e + 2];
+        sides[at + e] = along;
+        sides[at + LEVELS * edges + e] = up;
       }
     }
   }
-  return { value: Math.sqrt(most), x: mesh.x[node], y: mesh.y[node], place, height };
+  table = { lid, sides };
+  tables.set(fields, table);
+  return table;
+}
+
+/** @param pressures on the faces of the solved copy, in whose coordinates the place is */
+function largestWallShear(
+  fields: CellFields,
+  pressures: ArrayLike<number>,
+): { value: number; x: number; y: number; place: PeakShear['place']; height: number } {
+  const { mesh } = fields;
+  const { nodeCount } = mesh;
+  const patterns = pressures.length - 1;
+  const { lid, sides } = tableOf(fields, patterns);
+  const weights = Float64Array.from({ length: patterns }, (_, c) => pressures[c] - pressures[patterns]);
+  const floor = strongest(lid, nodeCount, weights);
+  const edges = mesh.boundaryTag.length;
+  const wall = strongest(sides, LEVELS * edges, weights);
+  const onWall = wall.square > floor.square;
+  const node = onWall ? mesh.boundary[3 * (wall.at % edges) + 2] : floor.at;
+  return {
+    value: Math.sqrt(onWall ? wall.square : floor.square),
+    x: mesh.x[node],
+    y: mesh.y[node],
+    place: onWall ? 'side wall' : 'floor and lid',
+    height: onWall ? Math.floor(wall.at / edges) / LEVELS : 1,
+  };
+}
+
+/** The place of the longest sum of two-component vectors by pattern, and its square. */
+function strongest(
+  table: Float32Array,
+  places: number,
+  weights: Float64Array,
+): { readonly square: number; readonly at: number } {
+  let square = 0;
+  let at = 0;
+  for (let i = 0; i < places; i += 1) {
+    let x = 0;
+    let y = 0;
+    for (let c = 0; c < weights.length; c += 1) {
+      x += weights[c] * table[2 * c * places + i];
+      y += weights[c] * table[(2 * c + 1) * places + i];
+    }
+    const here = x * x + y * y;
+    if (here > square) {
+      square = here;
+      at = i;
+    }
+  }
+  return { square, at };
 }
 
 /** Peak for unit pressure on one face (from 0, of the solved copy) and none on the others. */
@@ -98,5 +145,5 @@ export function peakOfFields(fields: CellFields, face: number): number {
   const faces = fields.pressure.length / (fields.modes * fields.mesh.vertexCount) + 1;
   const pressures = new Float64Array(faces);
   pressures[face] = 1;
-  return largestWallShear(mixFields(fields, pressures)).value;
+  return largestWallShear(fields, pressures).value;
 }
