@@ -42,6 +42,8 @@ export interface Writing {
 const DIGITS = 4;
 const LEAST = 3;
 const MOST_DECIMALS = 6;
+/** Of per cents: below a thousandth of one nothing can be made or measured. */
+const SHARE_DECIMALS = 3;
 
 export function writingOf(column: Column, rows: readonly Row[], index: number): Writing {
   let largest = 0;
@@ -62,7 +64,8 @@ export function writingOf(column: Column, rows: readonly Row[], index: number): 
     places(largest, column.signed ? 2 : DIGITS),
     Math.min(places(smallest, LEAST), places(largest, DIGITS) + 1),
   );
-  return { unit, decimals: Math.min(MOST_DECIMALS, Math.max(0, decimals)) };
+  const most = column.kind === 'share' ? SHARE_DECIMALS : MOST_DECIMALS;
+  return { unit, decimals: Math.min(most, Math.max(0, decimals)) };
 }
 
 export function cellText(cell: Cell | undefined, column: Column, { unit, decimals }: Writing): string {
@@ -70,6 +73,7 @@ export function cellText(cell: Cell | undefined, column: Column, { unit, decimal
   if (typeof cell === 'string') return cell;
   if (!Number.isFinite(cell)) return '–';
   const value = inUnit(cell, unit);
+  if (column.kind === 'share' && Math.abs(value) < 0.5 * 10 ** -decimals) return (0).toFixed(decimals);
   if (value !== 0 && (Math.abs(value) >= 1e7 || Math.abs(value) < 0.5 * 10 ** -decimals))
     return value
       .toExponential(2)

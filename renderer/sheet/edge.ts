@@ -1,6 +1,7 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { FIGURE_FACE, type Palette, SIZES } from '../look/tokens.ts';
 import { type Camera, graduation, type Size, toScreen } from './camera.ts';
+import type { Room } from './room.ts';
 
 /** The chip's own graduated edge: it carries its measure on all four sides, numbered at top and left. */
 export function drawEdge(
@@ -67,6 +68,26 @@ export function drawEdge(
   ctx.stroke();
   ctx.textAlign = 'left';
   ctx.fillText('mm', right + 14, bottom + 1);
+}
+
+/** px that the graduated edge takes outside of the chip. */
+const TICKS = 10;
+
+/** The places of the edge itself, so that no words run across it. */
+export function takeEdge(room: Room, chip: Pick<Chip, 'outline'>, camera: Camera, size: Size): void {
+  const { width, height } = chip.outline;
+  const [left, bottom] = toScreen(camera, size, [0, 0]);
+  const [right, top] = toScreen(camera, size, [width, height]);
+  const fill = (x: number, y: number, wide: number, high: number): void => {
+    // only what is on the screen: near the chip its edges are far away and long
+    const from = [Math.max(0, x), Math.max(0, y)] as const;
+    const to = [Math.min(size.width, x + wide), Math.min(size.height, y + high)] as const;
+    if (to[0] > from[0] && to[1] > from[1]) room.fill(from[0], from[1], to[0] - from[0], to[1] - from[1]);
+  };
+  fill(left, top - TICKS, right - left, TICKS + 1);
+  fill(left, bottom - 1, right - left, TICKS);
+  fill(left - TICKS, top, TICKS + 1, bottom - top);
+  fill(right - 1, top, TICKS, bottom - top);
 }
 
 const isMajor = (nm: number, major: number): boolean => Math.abs(nm / major - Math.round(nm / major)) < 1e-6;

@@ -62,6 +62,15 @@ const OTHERS: Readonly<Record<Side, readonly Side[]>> = {
   below: ['below', 'right', 'left', 'above'],
 };
 
+/** How many runs of channels lie under a rectangle of the screen. */
+const coverage =
+  (camera: Camera, size: Size, spatial: Spatial) =>
+  (left: number, top: number, width: number, height: number): number => {
+    const [a, b] = toPlan(camera, size, [left, top + height]);
+    const [c, d] = toPlan(camera, size, [left + width, top]);
+    return spatial.runsIn({ left: a, bottom: b, right: c, top: d });
+  };
+
 /** Names and figures beside the ports, as many as have room. */
 export function drawPortWords(
   ctx: CanvasRenderingContext2D,
@@ -70,7 +79,9 @@ export function drawPortWords(
   size: Size,
   palette: Palette,
   room: Room,
+  spatial: Spatial,
 ): void {
+  const covered = coverage(camera, size, spatial);
   ctx.textBaseline = 'middle';
   for (const { port, name, figure, side, missed } of words) {
     const [x, y] = toScreen(camera, size, port.at);
@@ -97,6 +108,8 @@ export function drawPortWords(
       return (
         left > 2 &&
         left + wide < size.width - 2 &&
+        (where === side ||
+          covered(left, first, wide, second + LINE - first) <= (where === 'around' ? 1 : 0)) &&
         room.free(left - 2, first, wide + 4, LINE) &&
         room.free(left - 2, second, wide + 4, LINE)
       );
@@ -125,12 +138,7 @@ export function drawPlaceWords(
   room: Room,
   spatial: Spatial,
 ): void {
-  /** How many runs of channels lie under a rectangle of the screen. */
-  const covered = (left: number, top: number, width: number, height: number): number => {
-    const [a, b] = toPlan(camera, size, [left, top + height]);
-    const [c, d] = toPlan(camera, size, [left + width, top]);
-    return spatial.runsIn({ left: a, bottom: b, right: c, top: d });
-  };
+  const covered = coverage(camera, size, spatial);
   for (const { at: plan, head, more, alarm } of words) {
     const at = toScreen(camera, size, plan);
     if (!onScreen(at, size, 20)) continue;

@@ -9,7 +9,7 @@ import { Bodies } from './bodies.ts';
 import { toScreen } from './camera.ts';
 import { CellArt } from './cell-art.ts';
 import { drawChannelWords } from './channel-words.ts';
-import { drawEdge, drawScaleBar } from './edge.ts';
+import { drawEdge, drawScaleBar, takeEdge } from './edge.ts';
 import { paintHand } from './hand-paint.ts';
 import { drawPlaceWords, drawPorts, drawPortWords } from './marks.ts';
 import { type Shown, shown } from './overlay.ts';
@@ -102,12 +102,13 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         const look = palette();
         drawPorts(ctx, d.chip, camera, size, look);
         const room = new Room();
+        takeEdge(room, d.chip, camera, size);
         for (const port of d.chip.ports) {
           const [x, y] = toScreen(camera, size, port.at);
           room.fill(x - 6, y - 6, 12, 12);
         }
         drawPlaceWords(ctx, d.places, camera, size, look, room, d.spatial);
-        drawPortWords(ctx, d.ports, camera, size, look, room);
+        drawPortWords(ctx, d.ports, camera, size, look, room, d.spatial);
         drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, d.spatial);
         drawScaleBar(ctx, camera, size, look);
       })(),

@@ -2,7 +2,7 @@ import type { Chip, Drive, Port } from '../../solver/chip/chip.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { Kind } from '../../solver/chip/units.ts';
 import type { Xy } from '../geometry/vector.ts';
-import { figure, typed, unitFor } from '../words/figure.ts';
+import { capital, counted, figure, typed, unitFor } from '../words/figure.ts';
 
 /** What stands beside a port: its name and its most telling figure. */
 export interface PortWords {
@@ -110,10 +110,21 @@ export function placeWords(
         where: judged.where,
       });
   }
-  for (const finding of result.findings) {
-    if (finding.severity === 'note' || out.length >= most) continue;
+  // one of a kind speaks for all of it: a hundred words side by side say nothing
+  const alike = new Map<string, number>();
+  const told = result.findings.filter(
+    ({ severity, accepted }) => severity !== 'note' && accepted === undefined,
+  );
+  for (const { kind } of told) alike.set(kind, (alike.get(kind) ?? 0) + 1);
+  for (const finding of told) {
+    const count = alike.get(finding.kind);
+    if (count === undefined || out.length >= most) continue;
     const at = finding.at ? ([finding.at[0] * 1e9, finding.at[1] * 1e9] as const) : places(finding.where);
-    if (at) out.push({ at, head: finding.says, more: finding.do, alarm: false, where: finding.where });
+    if (!at) continue;
+    alike.delete(finding.kind);
+    const more =
+      count > 1 ? `${finding.do} ${capital(counted(count - 1, 'more', 'more'))} like it.` : finding.do;
+    out.push({ at, head: finding.says, more, alarm: false, where: finding.where });
   }
   return out.slice(0, most);
 }

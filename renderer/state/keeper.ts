@@ -37,7 +37,7 @@ export class Keeper {
 
   /** True while something is not acknowledged yet. */
   get busy(): boolean {
-    return this.working !== null;
+    return this.queue.length > 0;
   }
 
   get position(): number {

@@ -13,6 +13,7 @@ export type Panel =
   | 'chip'
   | 'plots'
   | 'trials'
+  | 'as built'
   | 'hand over'
   | 'history'
   | 'keys'

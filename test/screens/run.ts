@@ -41,14 +41,16 @@ const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
       .catch(() => undefined);
   },
   dense: async (page) => {
+    await page.getByLabel('Size').selectOption('plate');
     await empty(page);
     await press(page, 't');
     const box = (await page.locator('.sheet').boundingBox())!;
-    await page.mouse.click(box.x + box.width * 0.12, box.y + box.height * 0.18);
-    await page.mouse.click(box.x + box.width * 0.86, box.y + box.height * 0.8);
+    await page.mouse.click(box.x + box.width * 0.31, box.y + box.height * 0.13);
+    await page.mouse.click(box.x + box.width * 0.67, box.y + box.height * 0.78);
+    await page.getByLabel('Holes').fill('350 um');
+    await page.getByLabel('Holes').press('Enter');
     await page.getByLabel('Outlets').selectOption('7');
-    await page.locator('.verdict-says').first().waitFor();
-    await page.waitForTimeout(4000);
+    await answered(page);
   },
   error: async (page) => {
     await demo(page, /Eight-way/);
