@@ -2,15 +2,17 @@ import { Clipper, FillRule, type Paths64 } from 'clipper2-ts';
 import type { Channel, Chip, Layer, Point, Port } from '../../solver/chip/chip.ts';
 import { readDescription } from '../../solver/chip/description.ts';
 import { writeDescription } from '../../solver/chip/description-write.ts';
+import type { Graph } from '../../solver/chip/graph.ts';
 import { planPolygons } from '../../solver/chip/plan.ts';
 import { readGraph } from '../../solver/chip/read-graph.ts';
 import { outlineFault } from '../../solver/chip/schema-outline.ts';
-import { NM_PER_M } from '../../solver/chip/units.ts';
+import { metres, NM_PER_M } from '../../solver/chip/units.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import type {
   BringInPicture,
   BringInReport,
   ChipLayerReport,
+  Deviation,
   Note,
   Role,
   BringInSettings as Settings,
@@ -37,6 +39,8 @@ const MOST_PICTURED = 150_000;
 
 /** Furthest that chords of a curve lie off it where areas are compared, nm. */
 const CHORD_ERROR = 20;
+/** Where walls lie no further off than this, m, channels are all there is. */
+const EDGES = metres(100);
 
 interface ChipLayer {
   readonly layer: Layer;
@@ -102,17 +106,17 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
   );
   // Read back as any description is: what comes out is one by its own rules.
   const sound = readDescription(writeDescription(whole), whole.name);
-  const graph = readGraph(sound);
+  let known: Graph | null = null;
+  const graph = (): Graph => {
+    known ??= readGraph(sound);
+    return known;
+  };
   const picture: BringInPicture = [];
   let pictured = 0;
   const reports: ChipLayerReport[] = made.map((layer, i) => {
     const id = chip.layers[i].id;
-    const polygons = planPolygons(sound, graph, id, {
-      chordError: CHORD_ERROR,
-      fillets: false,
-      holes: pads.size > 0,
-    });
-    const covered = polygons.flatMap(pathsOfPolygon);
+    const options = { chordError: CHORD_ERROR, fillets: false, holes: pads.size > 0 };
+    const covered = layer.covered ?? planPolygons(sound, graph(), id, options).flatMap(pathsOfPolygon);
     pictured += [...layer.ground, ...covered].reduce((sum, path) => sum + path.length, 0);
     picture.push({ layer: id, drawn: pathData(layer.ground), made: pathData(covered) });
     return {
@@ -127,7 +131,7 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
         }) => a !== b,
       ).length,
       chambers: sound.chambers.filter((chamber) => chamber.layer === id).length,
-      deviation: layer.ground.length > 0 ? deviation(layer.ground, covered, work) : null,
+      deviation: layer.ground.length > 0 ? (layer.fit ?? deviation(layer.ground, covered, work)) : null,
     };
   });
   return {
@@ -232,6 +236,10 @@ interface Made {
   /** What is fluid by the drawing. */
   readonly ground: Paths64;
   readonly layer: string;
+  /** What the channels cover, where nothing else does. */
+  readonly covered: Paths64 | null;
+  /** How far they lie off, where that is known. */
+  readonly fit: Deviation | null;
 }
 
 interface Making {
@@ -276,27 +284,47 @@ function makeLayer(empty: Chip, { layer, drawn }: ChipLayer, making: Making): Ma
   work.stage('recognising');
   let ofRegions = recognise(areas, work, told);
   const ground = bodies.length > 0 ? Clipper.union(regions, bodies, FillRule.NonZero) : regions;
-  if (regions.length === 0) return { found, fromPaths, chambers: [], ground, layer: layer.id };
-  ofRegions = dropExcess(ofRegions, chipPaths(empty, layer.id, ofRegions), regions);
-  const covered = chipPaths(empty, layer.id, [...found, ...ofRegions]);
-  const narrowest = [...found, ...ofRegions].reduce(
-    (least, { course }) => Math.min(least, ...course.width),
-    Infinity,
-  );
+  if (regions.length === 0)
+    return { found, fromPaths, chambers: [], ground, layer: layer.id, covered: bodies, fit: null };
+  let covered = chipPaths(empty, layer.id, ofRegions);
+  const fit = deviation(regions, covered, work);
   const chambers: Paths64 = [];
-  for (const area of restOf(regions, covered, Number.isFinite(narrowest) ? narrowest : 0)) {
-    const outlines = withoutHoles(area);
-    if (!outlines) notes.add('areas with too many holes to draw as chambers', `layer ${layer.id}`);
-    for (const outline of outlines ?? []) {
-      if (outlineFault(outline.map(({ x, y }): Point => [x, y])) === null) chambers.push(outline);
-      else
-        notes.add(
-          'areas whose outline touches itself',
-          `layer ${layer.id}, near x ${outline[0].x} nm, y ${outline[0].y} nm`,
-        );
+  if (!(fit.furthest <= EDGES)) {
+    const kept = dropExcess(ofRegions, covered, regions);
+    if (kept.length < ofRegions.length || found.length > 0) {
+      covered = chipPaths(empty, layer.id, [...found, ...kept]);
+    }
+    ofRegions = kept;
+    const narrowest = [...found, ...kept].reduce(
+      (least, { course }) => Math.min(least, ...course.width),
+      Infinity,
+    );
+    for (const area of restOf(regions, covered, Number.isFinite(narrowest) ? narrowest : 0)) {
+      const outlines = withoutHoles(area);
+      if (!outlines) notes.add('areas with too many holes to draw as chambers', `layer ${layer.id}`);
+      for (const outline of outlines ?? []) {
+        if (outlineFault(outline.map(({ x, y }): Point => [x, y])) === null) chambers.push(outline);
+        else
+          notes.add(
+            'areas whose outline touches itself',
+            `layer ${layer.id}, near x ${outline[0].x} nm, y ${outline[0].y} nm`,
+          );
+      }
     }
   }
-  return { found: [...found, ...ofRegions], fromPaths, chambers, ground, layer: layer.id };
+  const all = [...found, ...ofRegions];
+  // Where nothing is added to the channels, what they cover is known already.
+  const exact =
+    chambers.length === 0 && found.length === 0 && all.every(({ into }) => into[0] === 0 && into[1] === 0);
+  return {
+    found: all,
+    fromPaths,
+    chambers,
+    ground,
+    layer: layer.id,
+    covered: exact ? covered : null,
+    fit: exact ? fit : null,
+  };
 }
 
 /** The chip with named channels led into the chambers, and named chambers. */

@@ -11,7 +11,7 @@ const JOIN = 1e-6;
 export function chainLines(layer: DrawnLayer, gathering: Gathering): void {
   const lines = layer.lines.splice(0);
   if (lines.length === 0) return;
-  const nodes = new Nodes(extent(lines) * JOIN);
+  const nodes = new Nodes(extent(lines) * JOIN, lines[0].vertices[0], lines[0].vertices[1]);
   const from = new Int32Array(lines.length);
   const to = new Int32Array(lines.length);
   const seen = new Set<string>();
@@ -94,15 +94,22 @@ function extent(lines: readonly Track[]): number {
   return Math.max(x1 - x0, y1 - y0);
 }
 
+/** Cells in a row of the grid below: more than an extent holds, and products stay whole. */
+const ROW = 2 ** 24;
+
 /** Points that are one where they lie closer than a tolerance. */
 class Nodes {
   readonly #x: number[] = [];
   readonly #y: number[] = [];
-  readonly #cells = new Map<string, number[]>();
+  readonly #cells = new Map<number, number[]>();
   readonly #tolerance: number;
+  readonly #x0: number;
+  readonly #y0: number;
 
-  constructor(tolerance: number) {
+  constructor(tolerance: number, x: number, y: number) {
     this.#tolerance = tolerance > 0 ? tolerance : 1;
+    this.#x0 = x;
+    this.#y0 = y;
   }
 
   get count(): number {
@@ -111,10 +118,10 @@ class Nodes {
 
   at(x: number, y: number): number {
     const t = this.#tolerance;
-    const [cx, cy] = [Math.floor(x / t), Math.floor(y / t)];
+    const [cx, cy] = [Math.floor((x - this.#x0) / t), Math.floor((y - this.#y0) / t)];
     for (let i = cx - 1; i <= cx + 1; i += 1) {
       for (let j = cy - 1; j <= cy + 1; j += 1) {
-        for (const node of this.#cells.get(`${i} ${j}`) ?? []) {
+        for (const node of this.#cells.get(i * ROW + j) ?? []) {
           if (Math.hypot(this.#x[node] - x, this.#y[node] - y) <= t) return node;
         }
       }
@@ -122,9 +129,9 @@ class Nodes {
     const node = this.#x.length;
     this.#x.push(x);
     this.#y.push(y);
-    const cell = this.#cells.get(`${cx} ${cy}`);
+    const cell = this.#cells.get(cx * ROW + cy);
     if (cell) cell.push(node);
-    else this.#cells.set(`${cx} ${cy}`, [node]);
+    else this.#cells.set(cx * ROW + cy, [node]);
     return node;
   }
 }

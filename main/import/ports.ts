@@ -1,4 +1,5 @@
-import { Clipper, type Paths64 } from 'clipper2-ts';
+import { Clipper, type Path64, type Paths64 } from 'clipper2-ts';
+import Flatbush from 'flatbush';
 import type { Chamber, Chip, Layer, Point, Port } from '../../solver/chip/chip.ts';
 import { readGraph } from '../../solver/chip/read-graph.ts';
 import type { Notes } from './bring-in.ts';
@@ -52,13 +53,14 @@ export function holePorts(
 ): Port[] {
   const ports: Port[] = [];
   const seen = new Set<string>();
+  const indexed = grounds.map((ground) => new Ground(ground));
   for (const { x, y, radius } of rounds) {
     const at: Point = [Math.round(x), Math.round(y)];
     // A hole drawn twice is one.
     const key = at.join(' ');
     if (seen.has(key)) continue;
     seen.add(key);
-    const layer = grounds.findIndex((ground) => reached(ground, at, radius));
+    const layer = indexed.findIndex((ground) => ground.reached(at, radius));
     if (layer < 0) notes.add('holes with no fluid under them', `x ${at[0]} nm, y ${at[1]} nm`);
     else ports.push(port(ports.length, at, layers[layer].id, Math.round(2 * radius)));
   }
@@ -76,27 +78,45 @@ function port(count: number, at: Point, layer: string, diameter: number): Port {
   };
 }
 
-function inside(paths: Paths64, [x, y]: Point): boolean {
-  let odd = false;
-  for (const path of paths) {
-    for (let i = 0, j = path.length - 1; i < path.length; j = i, i += 1) {
-      const [a, b] = [path[i], path[j]];
-      if (a.y > y !== b.y > y && x < ((b.x - a.x) * (y - a.y)) / (b.y - a.y) + a.x) odd = !odd;
+/** Where there is fluid. */
+class Ground {
+  readonly #paths: Paths64;
+  readonly #index: Flatbush | null;
+
+  constructor(paths: Paths64) {
+    this.#paths = paths;
+    this.#index = paths.length > 0 ? new Flatbush(paths.length) : null;
+    for (const path of paths) {
+      const { left, top, right, bottom } = Clipper.getBounds(path);
+      this.#index?.add(left, top, right, bottom);
     }
+    this.#index?.finish();
   }
-  return odd;
+
+  /** Whether there is fluid under a hole: under its centre, or, where a channel just ends there, around it. */
+  reached([x, y]: Point, radius: number): boolean {
+    if (this.#holds(x, y)) return true;
+    for (let k = 0; k < 12; k += 1) {
+      const angle = (k * Math.PI) / 6;
+      if (this.#holds(x + 0.5 * radius * Math.cos(angle), y + 0.5 * radius * Math.sin(angle))) return true;
+    }
+    return false;
+  }
+
+  #holds(x: number, y: number): boolean {
+    let odd = false;
+    for (const i of this.#index?.search(x, y, x, y) ?? []) if (crossedOddly(this.#paths[i], x, y)) odd = !odd;
+    return odd;
+  }
 }
 
-/** Whether there is fluid under a hole: under its centre, or, where a channel just ends there, around it. */
-function reached(paths: Paths64, [x, y]: Point, radius: number): boolean {
-  if (inside(paths, [x, y])) return true;
-  return Array.from(
-    { length: 12 },
-    (_, k): Point => [
-      x + 0.5 * radius * Math.cos((k * Math.PI) / 6),
-      y + 0.5 * radius * Math.sin((k * Math.PI) / 6),
-    ],
-  ).some((point) => inside(paths, point));
+function crossedOddly(path: Path64, x: number, y: number): boolean {
+  let odd = false;
+  for (let i = 0, j = path.length - 1; i < path.length; j = i, i += 1) {
+    const [a, b] = [path[i], path[j]];
+    if (a.y > y !== b.y > y && x < ((b.x - a.x) * (y - a.y)) / (b.y - a.y) + a.x) odd = !odd;
+  }
+  return odd;
 }
 
 /** Ports where nothing says where they are: round pads that one channel leads to, and free ends of channels. */

@@ -1,9 +1,9 @@
 import type { Role } from '../contract/bring-in.ts';
 
 const SUGGESTIONS: readonly (readonly [RegExp, 'holes' | 'outline' | 'ignore'])[] = [
-  [/hole|port|drill|punch|inlet|outlet/i, 'holes'],
+  [/text|label|dimension|\bdim\b|align|mark|note|title|defpoints|legend|scale|lane|\(white\)$/i, 'ignore'],
   [/outline|border|frame|edge|dicing|\bchip\b|\bwafer\b|substrate/i, 'outline'],
-  [/text|label|dimension|\bdim\b|align|mark|note|title|defpoints|legend|scale/i, 'ignore'],
+  [/hole|port|drill|punch|inlet|outlet/i, 'holes'],
 ];
 
 /** The role that the name of a layer suggests. */

@@ -5,7 +5,9 @@ import type { Stage } from './work.ts';
 import type { FromImport, ImportJob } from './worker.ts';
 
 /** Most that the thread of one drawing may take, MB; beyond it the drawing is refused, and only it. */
-const MEMORY = 400;
+const MEMORY = 300;
+/** Room for what lives shortly, MB: most of what unions make does. */
+const YOUNG = 64;
 
 export type Ended = Exclude<FromImport, { kind: 'step' }> | { readonly kind: 'cancelled' };
 
@@ -34,7 +36,7 @@ export function startImport(job: ImportJob, onStep: (part: number, says: string)
   const entry = import.meta.url.endsWith('.ts') ? './worker.ts' : './bring-in-worker.js';
   const worker = new Worker(new URL(entry, import.meta.url), {
     workerData: job,
-    resourceLimits: { maxOldGenerationSizeMb: MEMORY },
+    resourceLimits: { maxOldGenerationSizeMb: MEMORY, maxYoungGenerationSizeMb: YOUNG },
   });
   let cancelled = false;
   const ended = new Promise<Ended>((done) => {

@@ -3,10 +3,11 @@ import type { Track } from '../drawing.ts';
 import type { Work } from '../work.ts';
 import { type Course, coursesOf, type Step } from './courses.ts';
 import { joined } from './joints.ts';
+import { pairOf, placeOn, pointOn } from './pairs.ts';
 import { type Area, booleanAreas, type Frame, pathsOf, toNm } from './plane.ts';
 import { stripsOf } from './strips.ts';
 import { triangulate } from './triangles.ts';
-import { wallsOf } from './walls.ts';
+import { type Wall, wallsOf } from './walls.ts';
 
 export interface Found {
   readonly course: Course;
@@ -20,6 +21,11 @@ export function recognise(areas: readonly Area[], work: Work, told: (share: numb
   areas.forEach((area, i) => {
     told(i / areas.length);
     const loops = wallsOf(area);
+    const plain = plainStrip(loops);
+    if (plain) {
+      found.push({ course: plain, into: [0, 0] });
+      return;
+    }
     const triangles = triangulate(loops, work);
     if (!triangles) return;
     const { courses, into } = joined(alone(stripsOf(loops.flat(), triangles)));
@@ -28,6 +34,27 @@ export function recognise(areas: readonly Area[], work: Work, told: (share: numb
     });
   });
   return found;
+}
+
+/** The channel that a four-sided area with a long pair of even sides is; most drawings hold many of them. */
+function plainStrip(loops: readonly (readonly Wall[])[]): Course | null {
+  const [walls] = loops;
+  if (loops.length !== 1 || walls.length !== 4 || walls.some(({ sweep }) => sweep !== 0)) return null;
+  for (const k of [0, 1]) {
+    const pair = pairOf(walls[k], walls[k + 2]);
+    if (pair?.axis.kind !== 'line' || pair.axis.slope !== 0) continue;
+    const { axis, from, to } = pair;
+    if (to - from < SHORT_ALONE * axis.width) continue;
+    // Square ends only: where walls end apart the triangles tell more.
+    const ends = [walls[k].x0, walls[k].x1, walls[k + 2].x0, walls[k + 2].x1].map((x, i) => {
+      const y = [walls[k].y0, walls[k].y1, walls[k + 2].y0, walls[k + 2].y1][i];
+      return placeOn(axis, x, y, 0);
+    });
+    if (ends.some((s) => Math.min(Math.abs(s - from), Math.abs(s - to)) > 2)) continue;
+    const [[x0, y0], [x1, y1]] = [pointOn(axis, from), pointOn(axis, to)];
+    return coursesOf([{ x0, y0, x1, y1, sweep: 0, radius: 0 }], axis.width)[0] ?? null;
+  }
+  return null;
 }
 
 /** A stretch shorter than this many widths between much narrower ones, or by itself, is a chamber. */

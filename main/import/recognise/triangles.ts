@@ -28,13 +28,15 @@ const MOST = 150_000;
 /** Largest piece as a share of the gap it faces, and the share it is cut to. */
 const COARSE = 1.1;
 const FINE = 0.6;
+/** Pieces of one wall before it is known what it faces. */
+const MOST_AT_FIRST = 2000;
 /** Most radians of an arc in one piece. */
 const ARC_STEP = 0.3;
 
 /** Delaunay triangles of an area, its walls cut as finely as the gaps ask; null where its walls cross. */
 export function triangulate(loops: readonly (readonly Wall[])[], work: Work): Triangles | null {
   const walls = loops.flat();
-  let cuts = walls.map(({ sweep }) => evenly(Math.max(1, Math.ceil(Math.abs(sweep) / ARC_STEP))));
+  let cuts = firstCuts(walls);
   for (let round = 0; ; round += 1) {
     const boundary = sample(loops, cuts);
     work.points(boundary.count >> 3, '');
@@ -46,6 +48,22 @@ export function triangulate(loops: readonly (readonly Wall[])[], work: Work): Tr
     if (!finer) return asTriangles(found, boundary);
     cuts = finer;
   }
+}
+
+/** Walls cut by the mean width that area and perimeter tell; what is narrower is cut further later. */
+function firstCuts(walls: readonly Wall[]): Float64Array[] {
+  let [area, perimeter] = [0, 0];
+  const lengths = walls.map(({ x0, y0, x1, y1, sweep, radius }) => {
+    area += (x0 * y1 - x1 * y0) / 2;
+    const length = sweep === 0 ? Math.hypot(x1 - x0, y1 - y0) : Math.abs(sweep) * radius;
+    perimeter += length;
+    return length;
+  });
+  const wide = (2 * Math.abs(area)) / perimeter;
+  return walls.map(({ sweep }, k) => {
+    const byWidth = Math.min(MOST_AT_FIRST, Math.ceil((0.9 * lengths[k]) / wide));
+    return evenly(Math.max(1, byWidth, Math.ceil(Math.abs(sweep) / ARC_STEP)));
+  });
 }
 
 function evenly(count: number): Float64Array {

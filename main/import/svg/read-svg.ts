@@ -179,10 +179,11 @@ class Walk {
     if (!parts || parts.length === 0) return;
     const fill = element.name === 'line' ? 'none' : paintKind(style.fill);
     const stroke = paintKind(style.stroke);
-    if (fill === 'paint') {
+    // What is painted white may be the page, or the channels of a dark plate: a layer of its own, to be told.
+    if (fill !== 'none' && !(fill === 'white' && stroke === 'paint')) {
       const loops = parts.map(({ vertices }) => moved(Float64Array.from(vertices), by, true));
       this.to.region(
-        layer,
+        fill === 'white' ? `${layer} (white)` : layer,
         loops,
         { fill: style.fillRule === 'evenodd' ? 'even-odd' : 'non-zero', nests: false },
         where,
@@ -191,7 +192,7 @@ class Walk {
       return;
     }
     if (stroke === 'paint') this.#strokes(parts, by, style, layer, where);
-    else if (fill === 'white' || stroke === 'white') this.to.note('shapes painted white', where);
+    else if (stroke === 'white') this.to.note('strokes painted white', where);
     else this.to.note('shapes with neither fill nor stroke', where);
   }
 
