@@ -99,6 +99,23 @@ function patternOf(solution: CellSolution, fields: CellFields, { key, flow }: Ce
   return found;
 }
 
+const doses = new WeakMap<History, Map<number, number>>();
+
+/** Of a history that is kept with its pattern: reckoned once. */
+function keptDose(history: History, exponent: number): number {
+  let known = doses.get(history);
+  if (!known) {
+    known = new Map();
+    doses.set(history, known);
+  }
+  let dose = known.get(exponent);
+  if (dose === undefined) {
+    dose = doseOf(history, exponent);
+    known.set(exponent, dose);
+  }
+  return dose;
+}
+
 /**
  * A cell as paths cross it: what its fluid meets on the whole, and the fastest stretching. Null where
  * nothing flows or fields were not kept. Lengths go by the depth d of the solved shape, stresses by
@@ -171,7 +188,7 @@ export class CellPaths {
       get stretch() {
         return stretch();
       },
-      dose: (exponent) => doseOf(pattern.scan.spread, exponent) * this.#stress ** exponent * this.#time,
+      dose: (exponent) => keptDose(pattern.scan.spread, exponent) * this.#stress ** exponent * this.#time,
       history: () => this.#scaled(pattern.scan.spread),
       hugging: (diameter) => this.#hugging(from, to, diameter),
     };
@@ -195,13 +212,14 @@ export class CellPaths {
     const paths = there.length > 0 ? there : all;
     if (paths.length === 0) return null;
     const worst = (value: (trace: Trace) => number): number => Math.max(...paths.map(value));
-    const hardest = paths.reduce((a, b) => (doseOf(b.history, 3) > doseOf(a.history, 3) ? b : a));
+    const hardest = (): Trace =>
+      paths.reduce((a, b) => (keptDose(b.history, 3) > keptDose(a.history, 3) ? b : a));
     return {
       time: worst(({ time }) => time) * this.#time,
       peak: worst(({ peak }) => peak) * this.#stress,
       dose: (exponent) =>
-        worst(({ history }) => doseOf(history, exponent)) * this.#stress ** exponent * this.#time,
-      history: () => this.#scaled(hardest.history),
+        worst(({ history }) => keptDose(history, exponent)) * this.#stress ** exponent * this.#time,
+      history: () => this.#scaled(hardest().history),
     };
   }
 }
