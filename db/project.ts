@@ -132,10 +132,11 @@ export class Project {
     return this.#do(() => listTrials(this.#store), false);
   }
 
-  freezeTrial(name: string, seq: number, result: Result | null): Trial {
+  /** @param chip in place of the project's own: another that belongs to it, such as the made one */
+  freezeTrial(name: string, seq: number, result: Result | null, chip: Chip = this.#chip): Trial {
     if (seq !== this.#seq)
       throw new Problem('project', 'The chip has changed since.', name, 'Freeze it again as it stands.');
-    return this.#do(() => freezeTrial(this.#store, name, this.#chip, result, Date.now()));
+    return this.#do(() => freezeTrial(this.#store, name, chip, result, Date.now()));
   }
 
   renameTrial(id: number, name: string): Trial {

@@ -155,7 +155,7 @@ function drives(chip: Chip, { restored, wider, result }: AsBuilt, width: number)
       ...wrapped(
         restored.met
           ? result.targets.every(({ met }) => met)
-            ? 'Drives that bring the targets as near as they were meant'
+            ? 'The made chip meets its targets as it is driven; drives that bring them nearer still'
             : 'Drives that restore the targets'
           : `Drives alone do not restore the targets; nearest (${nearest(chip, restored)})`,
         width,

@@ -1,9 +1,9 @@
 import type { Chip, Limit, Target } from '../../solver/chip/chip.ts';
-import type { Result } from '../../solver/chip/result.ts';
+import type { Making, Result } from '../../solver/chip/result.ts';
 import { formatNumber, formatQuantity } from '../../solver/chip/units-format.ts';
 import type { Finding } from '../../solver/problem/finding.ts';
 import { damageText, pumpsText, routesText } from './exposure-text.ts';
-import { NONE, tableLines } from './table.ts';
+import { type Column, NONE, tableLines } from './table.ts';
 import { wrapped } from './width.ts';
 
 /** More rows than this are a matter for a file, not for a terminal. */
@@ -48,6 +48,22 @@ function cut<T>(rows: readonly T[], what: string): { shown: readonly T[]; more: 
   };
 }
 
+/** What does most of a band: "width of feed, 62 %". */
+const chiefText = (making: Making | undefined): string =>
+  making?.chief
+    ? `${making.chief.what} of ${making.chief.id}, ${formatQuantity(making.chief.part, 'share', { digits: 2 })}`
+    : NONE;
+
+/** What tolerances of making do to shares, where any are given; a column of worst cases and what most comes from. */
+function makingColumns(makings: readonly (Making | undefined)[]): Column[] {
+  if (makings.every((making) => making === undefined)) return [];
+  return [
+    { head: '± making', kind: 'share', digits: 2, values: makings.map((making) => making?.likely ?? null) },
+    { head: 'at worst', kind: 'share', digits: 2, values: makings.map((making) => making?.worst ?? null) },
+    { head: 'most from', words: makings.map(chiefText) },
+  ];
+}
+
 function ports({ ports: all }: Result): string[] {
   const { shown, more } = cut(all, 'ports');
   return [
@@ -57,6 +73,7 @@ function ports({ ports: all }: Result): string[] {
       { head: 'pressure', kind: 'pressure', values: shown.map(({ pressure }) => pressure) },
       { head: 'flow in', kind: 'flow', values: shown.map(({ flow }) => flow) },
       { head: 'share', kind: 'share', values: shown.map(({ share }) => share) },
+      ...makingColumns(shown.map(({ making }) => making?.share)),
     ]),
     ...more,
   ];
@@ -77,6 +94,16 @@ function channels(result: Result): string[] {
       { head: 'pressure drop', kind: 'pressure', values: shown.map(({ pressureDrop }) => pressureDrop) },
       { head: 'mean velocity', kind: 'velocity', values: shown.map(({ meanVelocity }) => meanVelocity) },
       { head: 'peak wall shear', kind: 'stress', values: shown.map(({ peakWallShear }) => peakWallShear) },
+      ...(shown.some(({ making }) => making)
+        ? ([
+            {
+              head: '± making',
+              kind: 'share',
+              digits: 2,
+              values: shown.map(({ making }) => making?.shear.likely ?? null),
+            },
+          ] as const)
+        : []),
       { head: 'residence time', kind: 'time', values: shown.map(({ residenceTime }) => residenceTime) },
     ]),
     ...more,
@@ -113,6 +140,16 @@ function targets(chip: Chip, { targets: all }: Result): string[] {
         values: shown.map(({ wanted, got }) => (got === null ? null : offBy(got, wanted))),
       },
       { head: 'within', kind: 'share', digits: 2, values: shown.map((_, i) => chip.targets[i]!.within) },
+      ...(shown.some(({ making }) => making)
+        ? ([
+            {
+              head: '± making',
+              kind: 'share',
+              digits: 2,
+              values: shown.map(({ making }) => making?.likely ?? null),
+            },
+          ] as const)
+        : []),
       { head: '', words: shown.map(({ met }) => verdict(met)) },
     ]),
     ...more,
@@ -162,6 +199,14 @@ function findings({ findings: all }: Result, width: number): string[] {
   ];
 }
 
+/** What the bands of making mean, where there are any. */
+function makingLine({ making }: Result): string[] {
+  if (!making) return [];
+  return [
+    'Making: ± is relative to its figure and as likely to hold as the tolerances are (root of the sum of squares); at worst all are used up against it.',
+  ];
+}
+
 function balanceLine({ balance }: Result): string {
   const { conservationResidual, powerIn, dissipation } = balance;
   const power = formatQuantity(powerIn, 'power');
@@ -206,7 +251,11 @@ export function reportText(chip: Chip, result: Result, width = 100): string {
     targets(chip, result),
     limits(chip, result),
     findings(result, width),
-    [...wrapped(balanceLine(result), width), lastLine(result)],
+    [
+      ...makingLine(result).flatMap((line) => wrapped(line, width)),
+      ...wrapped(balanceLine(result), width),
+      lastLine(result),
+    ],
   ];
   return `${blocks
     .filter((block) => block.length > 0)

@@ -22,6 +22,7 @@ export const BOUNDS = {
   text: 64 * 1024 * 1024,
   blob: 64 * 1024 * 1024,
   keys: 512,
+  table: 8_000_000,
   settings: 2000,
   changes: 200_000,
 } as const;
@@ -204,14 +205,23 @@ export const REQUESTS = {
   },
   'recent.forget': { input: z.strictObject({ path }), output: nothing },
 
-  /** Freezes the chip as it stands at `seq`, with its result where there is one. */
-  'trials.freeze': { input: z.strictObject({ name, seq, result: result.nullable() }), output: trial },
+  /** Freezes the chip as it stands at `seq` (or `chip` in its place, such as the made one), with its result where there is one. */
+  'trials.freeze': {
+    input: z.strictObject({ name, seq, result: result.nullable(), chip: chip.optional() }),
+    output: trial,
+  },
   'trials.list': { input: nothing, output: z.object({ trials: z.array(trial) }) },
   'trials.rename': { input: z.strictObject({ id, name }), output: trial },
   'trials.delete': { input: z.strictObject({ id }), output: nothing },
   'trials.get': {
     input: z.strictObject({ id }),
     output: z.object({ trial, chip, result: result.nullable() }),
+  },
+
+  /** A table of measurements as cells, with the line of the text that each row begins on. */
+  'measurements.read': {
+    input: z.strictObject({ text: z.string().max(BOUNDS.table) }),
+    output: z.object({ rows: z.array(z.array(z.string())), lines: z.array(z.number()) }),
   },
 
   /**

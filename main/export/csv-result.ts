@@ -1,4 +1,4 @@
-import type { PieceResult, Result } from '../../solver/chip/result.ts';
+import type { Making, PieceResult, Result } from '../../solver/chip/result.ts';
 import { inUnit } from '../../solver/chip/units.ts';
 import { type Cell, csvText } from './csv.ts';
 
@@ -23,12 +23,25 @@ const COLUMNS = {
   wanted: null,
   got: null,
   met: null,
+  'making likely': '%',
+  'making worst': '%',
+  'making mostly': null,
 } as const;
 type Column = keyof typeof COLUMNS;
 
 type Row = { readonly [K in Column]?: Cell };
 
 const PERCENT = '%';
+
+/** Relative to the figure that the row is about: a port's share, a piece's peak wall shear, what a target got. */
+const makingCells = (making: Making | undefined): Row =>
+  making
+    ? {
+        'making likely': making.likely,
+        'making worst': making.worst,
+        'making mostly': making.chief ? `${making.chief.what} of ${making.chief.id}` : null,
+      }
+    : {};
 
 function pieceRow(id: string, piece: PieceResult): Row {
   return {
@@ -46,6 +59,7 @@ function pieceRow(id: string, piece: PieceResult): Row {
     'peak wall shear': piece.peakWallShear,
     'mean wall shear': piece.meanWallShear,
     'residence time': piece.residenceTime,
+    ...makingCells(piece.making?.shear),
   };
 }
 
@@ -60,6 +74,7 @@ function targetRow(target: Result['targets'][number], isShare: boolean): Row {
     wanted: spelt(target.wanted),
     got: spelt(target.got),
     met: target.met,
+    ...makingCells(target.making),
   };
 }
 
@@ -82,7 +97,14 @@ function cells(row: Row): Cell[] {
  */
 export function resultCsv(result: Result, isShare: (target: number) => boolean): string {
   const rows: Row[] = [
-    ...result.ports.map(({ id, pressure, flow, share }) => ({ kind: 'port', id, pressure, flow, share })),
+    ...result.ports.map(({ id, pressure, flow, share, making }) => ({
+      kind: 'port',
+      id,
+      pressure,
+      flow,
+      share,
+      ...makingCells(making?.share),
+    })),
     ...result.channels.flatMap(({ id, pieces }) =>
       pieces.map((piece, i) => pieceRow(`${id}#${i + 1}`, piece)),
     ),

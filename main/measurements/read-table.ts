@@ -39,6 +39,18 @@ function separatorOf(text: string): string {
   return [',', ';', '\t'].reduce((best, sign) => (count(sign) > count(best) ? sign : best));
 }
 
+/** Line of the quotation mark that opens a text and is never closed. */
+function openedIn(text: string): number {
+  let [line, opened, open] = [1, 1, false];
+  for (let i = 0; i < text.length; i += 1) {
+    if (text[i] === '"') {
+      open = !open;
+      if (open) opened = line;
+    } else if (text[i] === '\n') line += 1;
+  }
+  return opened;
+}
+
 /**
  * A table of text as cells, by RFC 4180, with semicolons or tabs for commas where its first row has them. Throws
  * `Problem` with the row at fault.
@@ -99,11 +111,10 @@ export function readTable(text: string): MeasuredTable {
       'The table cannot be read.',
       'Save it as CSV.',
     ];
-    const { lines, column } = error as CsvError & {
-      readonly lines?: number;
-      readonly column?: number | string;
-    };
+    // An open mark is found at the end of the text; what is wanted is where it was opened.
+    if (error.code === 'CSV_QUOTE_NOT_CLOSED') throw new Problem(kind, what, `row ${openedIn(text)}`, remedy);
+    const { lines = 1, column } = error as CsvError & { readonly lines?: number; readonly column?: number };
     const place = typeof column === 'number' ? `, column ${column + 1}` : '';
-    throw new Problem(kind, what, `row ${lines ?? 1}${place}`, remedy);
+    throw new Problem(kind, what, `row ${lines}${place}`, remedy);
   }
 }

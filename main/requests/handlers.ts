@@ -5,6 +5,7 @@ import { aboutRequests } from './about.ts';
 import { fileRequests } from './files.ts';
 import { keptRequests } from './kept.ts';
 import { maskRequests } from './masks.ts';
+import { measuredRequests } from './measured.ts';
 import { noteRequests } from './notes.ts';
 import { projectRequests } from './project.ts';
 import { userRequests } from './user.ts';
@@ -23,6 +24,7 @@ export const HANDLERS: Handlers<Exclude<RequestName, 'files.choose'>> = {
   ...fileRequests,
   ...keptRequests,
   ...maskRequests,
+  ...measuredRequests,
   ...noteRequests,
   ...projectRequests,
   ...userRequests,

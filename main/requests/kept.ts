@@ -1,3 +1,4 @@
+import { readChip } from '../../solver/chip/schema-chip.ts';
 import type { Handlers } from './handlers.ts';
 
 /** What a project keeps beside the chip: trials, results, solved cells. */
@@ -12,9 +13,9 @@ export const keptRequests: Handlers<
   | 'cells.get'
   | 'cells.put'
 > = {
-  'trials.freeze': (session, { name, seq, result }) => {
+  'trials.freeze': (session, { name, seq, result, chip }) => {
     const { workplace } = session;
-    const trial = workplace.project.freezeTrial(name, seq, result);
+    const trial = workplace.project.freezeTrial(name, seq, result, chip && readChip(chip));
     session.touched();
     return trial;
   },

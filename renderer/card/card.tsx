@@ -1,4 +1,5 @@
 import { useEffect, useRef } from 'react';
+import { AsBuiltPanel } from '../as-built/as-built-panel.tsx';
 import { findPart } from '../edits/parts.ts';
 import { HandOverPanel } from '../handover/hand-over-panel.tsx';
 import { usePage } from '../page/context.tsx';
@@ -22,6 +23,7 @@ const TITLES: Readonly<Record<Exclude<Panel, 'card'>, string>> = {
   chip: 'Chip and fluid',
   plots: 'Plots',
   trials: 'Trials',
+  'as built': 'As built',
   'hand over': 'Hand over',
   history: 'What was done',
   keys: 'Keys and units',
@@ -73,6 +75,8 @@ function PanelBody({ panel }: { readonly panel: Exclude<Panel, 'card'> }) {
       return <PlotsPanel />;
     case 'trials':
       return <TrialsPanel />;
+    case 'as built':
+      return <AsBuiltPanel />;
     case 'hand over':
       return <HandOverPanel />;
     case 'history':

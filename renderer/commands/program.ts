@@ -44,6 +44,15 @@ export function programCommands(desk: Desk): Command[] {
       run: () => desk.view.patch({ panel: 'trials' }),
     },
     {
+      id: 'as built',
+      title: 'As built',
+      keys: [],
+      help: 'Give what was measured on the made chip: what it does, and which drives restore the targets.',
+      group: 'Chip',
+      why: open,
+      run: () => desk.view.patch({ panel: 'as built' }),
+    },
+    {
       id: 'hand over',
       title: 'Hand over',
       keys: ['e'],

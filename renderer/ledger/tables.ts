@@ -1,11 +1,11 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { Graph } from '../../solver/chip/graph.ts';
-import type { Result } from '../../solver/chip/result.ts';
+import type { Making, Result } from '../../solver/chip/result.ts';
 import { pathLength } from '../geometry/path.ts';
 import { driveText } from '../sheet/words.ts';
 import type { Tab } from '../state/view.ts';
 import { placeRef } from '../verdict/answer.ts';
-import { capital } from '../words/figure.ts';
+import { capital, figure } from '../words/figure.ts';
 import type { Cell, Column, Row, Table } from './table.ts';
 
 export { csvOf } from './table.ts';
@@ -64,6 +64,12 @@ function ports(chip: Chip, result: Result | null): Table {
     { id: 'flow', head: 'flow in', kind: 'flow', signed: false, wide: 112 },
     { id: 'pressure', head: 'pressure', kind: 'pressure', wide: 112 },
     { id: 'hole', head: 'hole', kind: 'length', unit: 'um', edits: 'hole', wide: 88 },
+    ...(result?.making
+      ? ([
+          { id: 'making', head: '± from making', kind: 'share', unit: '%', wide: 112 },
+          { id: 'chief', head: 'most from', wide: 208 },
+        ] as const)
+      : []),
   ];
   const rows = chip.ports.map((port): Row => {
     const wants = wanted.get(port.id);
@@ -84,12 +90,19 @@ function ports(chip: Chip, result: Result | null): Table {
         there?.flow ?? null,
         there?.pressure ?? null,
         port.diameter / 1e9,
+        ...(result?.making ? [there?.making?.share.likely ?? null, chiefWords(there?.making?.share)] : []),
       ],
       ...(gets && !gets.met && { missed: [3, 4] }),
     };
   });
   return { columns, rows };
 }
+
+/** "width of arm 3, 51 %": what does most of a band. */
+const chiefWords = (making: Making | undefined): string | null =>
+  making?.chief
+    ? `${making.chief.what} of ${making.chief.id}, ${figure(making.chief.part, 'share', { unit: '%', digits: 2 })}`
+    : null;
 
 /** Rounding of doubles is no deviation. */
 const beyondNoise = (off: number): number => (Math.abs(off) < 1e-9 ? 0 : off);
@@ -107,6 +120,9 @@ function channels(chip: Chip, result: Result | null): Table {
     { id: 'shear', head: 'peak shear', kind: 'stress', wide: 108 },
     { id: 'reynolds', head: 'Re', kind: 'number', wide: 64 },
     { id: 'time', head: 'time', kind: 'time', unit: 's', wide: 80 },
+    ...(result?.making
+      ? ([{ id: 'making', head: 'shear ± making', kind: 'share', unit: '%', wide: 120 }] as const)
+      : []),
   ];
   const solved = new Map(result?.channels.map((channel) => [channel.id, channel]));
   const total = result?.ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0) ?? 0;
@@ -122,11 +138,14 @@ function channels(chip: Chip, result: Result | null): Table {
     let shear: number | null = null;
     let reynolds: number | null = null;
     let time: number | null = pieces.length > 0 ? 0 : null;
+    // Of the piece with the highest shear.
+    let making: number | null = null;
     for (const piece of pieces) {
       if (piece.flow !== null && Math.abs(piece.flow) > Math.abs(flow ?? 0)) flow = piece.flow;
       flow ??= piece.flow;
       drop = drop === null ? null : drop + piece.pressureDrop;
       speed = larger(speed, piece.meanVelocity);
+      if (piece.making && (piece.peakWallShear ?? 0) > (shear ?? 0)) making = piece.making.shear.likely;
       shear = larger(shear, piece.peakWallShear);
       reynolds = larger(reynolds, piece.reynolds);
       time = time === null || piece.residenceTime === null ? null : time + piece.residenceTime;
@@ -145,6 +164,7 @@ function channels(chip: Chip, result: Result | null): Table {
         shear,
         reynolds,
         time,
+        ...(result?.making ? [making] : []),
       ],
       ...(shear !== null && shear > limit && { missed: [8] }),
     };

@@ -1,6 +1,6 @@
 import type { Chip } from '../chip/chip.ts';
 import type { Result } from '../chip/result.ts';
-import { emptyMemory } from '../memory.ts';
+import { emptyMemory, type Memory } from '../memory.ts';
 import { type SolveOptions, solve } from '../solve.ts';
 import { type Made, madeChip } from './made.ts';
 import type { Measured } from './measured.ts';
@@ -21,11 +21,21 @@ export interface AsBuiltOptions extends SolveOptions {
   readonly set?: readonly string[];
 }
 
-/** The whole way: measurements into a made chip, both solved, and the drives that restore the targets. Throws `Problem`. */
-export function asBuilt(drawn: Chip, measured: readonly Measured[], options: AsBuiltOptions = {}): AsBuilt {
+/**
+ * The whole way: measurements into a made chip, both solved, and the drives that restore the targets. Throws `Problem`.
+ *
+ * @param memory what may be kept of the made chip between calls
+ * @param known of the drawn chip, where it is solved already
+ */
+export function asBuilt(
+  drawn: Chip,
+  measured: readonly Measured[],
+  options: AsBuiltOptions = {},
+  memory: Memory = emptyMemory(),
+  known: Result | null = null,
+): AsBuilt {
   const made = madeChip(drawn, measured);
-  const before = solve(drawn, options);
-  const memory = emptyMemory();
+  const before = known ?? solve(drawn, options);
   const result = solve(made.chip, options, memory);
   if (made.chip.targets.length === 0) return { ...made, drawn: before, result, restored: null, wider: null };
   const restored = restoreDrives(made.chip, options, memory);
