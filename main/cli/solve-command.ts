@@ -1,9 +1,9 @@
 import { realpath } from 'node:fs/promises';
 import { basename, dirname, join, resolve } from 'node:path';
 import { Problem } from '../../solver/problem/problem.ts';
-import { solve } from '../../solver/solve.ts';
 import { resultCsv } from '../export/csv-result.ts';
 import { type Output, writeFiles } from '../export/write-files.ts';
+import { solveChip } from '../solving/solve-chip.ts';
 import { type CliOptions, cliOptions, USAGE } from './options.ts';
 import { readChipFile } from './read-chip.ts';
 import { allMet, reportText } from './report.ts';
@@ -43,7 +43,7 @@ async function checkPlaces({ file, csv, json }: CliOptions): Promise<void> {
 async function run(options: CliOptions, io: Io): Promise<number> {
   await checkPlaces(options);
   const chip = await readChipFile(options.file);
-  const result = await solve(chip, options.solve);
+  const result = await solveChip(chip, options.solve);
   const csv = options.csv && resultCsv(result, (i) => 'share' in chip.targets[i]!);
   const json = options.json && `${JSON.stringify(result, null, 2)}\n`;
   const outputs: Output[] = [];
