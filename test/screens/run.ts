@@ -76,6 +76,18 @@ const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
     await demo(page, /Cell loading/);
     await press(page, 'i');
   },
+  'as-built': async (page) => {
+    await demo(page, /Eight-way/);
+    await answered(page);
+    await press(page, '/');
+    await page.keyboard.type('as built');
+    await page.keyboard.press('Enter');
+    await page
+      .getByLabel('Table, typed or pasted')
+      .fill('part,what,value (um),uncertainty\nflow,depth,78.5,0.4\nlevel 3 arm 1,width,126,1\n');
+    await page.getByRole('button', { name: 'Compare' }).click();
+    await page.getByRole('region', { name: 'Drawn and made' }).waitFor({ timeout: 120_000 });
+  },
   plots: async (page) => {
     await demo(page, /Cell loading/);
     await answered(page);
