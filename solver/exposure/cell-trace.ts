@@ -26,23 +26,30 @@ const INSIDE = 1e-4;
  * it; only floor and lid keep the ball at its distance.
  */
 export function huggingTraces(field: VelocityField, face: number, radius: number): Trace[] {
-  const walk = walker(field, radius);
-  const line = faceLine(field.mesh, face + 1);
-  const length = line.length;
+  const length = faceLine(field.mesh, face + 1).length;
   if (length < 2 * radius || radius > HALF) return [];
   const low = 1 - radius / HALF;
-  const starts: [number, number][] = [];
+  const starts: Start[] = [];
   for (const along of [radius, length / 4, length / 2, (3 * length) / 4, length - radius]) {
     starts.push([along, low]);
   }
   for (const along of [radius, length - radius]) starts.push([along, 0], [along, low / 2]);
-  const traces: Trace[] = [];
-  for (const [along, s] of starts) {
-    const [x, y] = line.at(along);
-    const trace = walk(x, y, s);
-    if (trace) traces.push(trace);
-  }
-  return traces;
+  return tracesFrom(field, face, starts, radius).filter((trace) => trace !== null);
+}
+
+/** Distance along a face from its first end, in depths, and height from half depth (−1 floor, 1 lid). */
+export type Start = readonly [along: number, s: number];
+
+/** Paths from places of a face (from 0), whose centres stay a radius off floor and lid; null where nothing moves. */
+export function tracesFrom(
+  field: VelocityField,
+  face: number,
+  starts: readonly Start[],
+  radius: number,
+): (Trace | null)[] {
+  const walk = walker(field, radius);
+  const line = faceLine(field.mesh, face + 1);
+  return starts.map(([along, s]) => walk(...line.at(along), s));
 }
 
 /** A face as a line on the plan, moved in a hair. */

@@ -3,6 +3,7 @@ import type { CellSolution } from '../cell/cell.ts';
 import { depthValues } from '../cell/depth.ts';
 import { flowField, HALF } from '../cell/flow-field.ts';
 import { quadratic, quadraticGradient } from '../cell/triangle.ts';
+import type { Mesh } from '../mesh/mesh.ts';
 import { rectangleShear } from '../section/rectangle-curve.ts';
 
 /** Parts of a floor by their wall shear: areas in m², stresses in Pa. */
@@ -28,8 +29,10 @@ export function ductFloor(width: number, depth: number, length: number, gradient
   return { area, stress };
 }
 
-/** Small triangles that each triangle of a cell is cut into, per side. */
-const CUTS = 3;
+/** Small triangles that each triangle of a cell is cut into, per side: as small as a tenth of the depth, as far as that goes. */
+const FINEST = 0.1;
+const LEAST_CUTS = 3;
+const MOST_CUTS = 10;
 
 /**
  * Floor of a solved cell within a part of its plan; null where fields were not kept.
@@ -59,11 +62,12 @@ export function cellFloor(
   const da = new Float64Array(6);
   const db = new Float64Array(6);
   for (let t = 0; t < mesh.triangles.length / 6; t += 1) {
-    for (let i = 0; i < CUTS; i += 1) {
-      for (let j = 0; j < 2 * (CUTS - i) - 1; j += 1) {
+    const cuts = Math.min(MOST_CUTS, Math.max(LEAST_CUTS, Math.ceil(sizeOf(mesh, t) / FINEST)));
+    for (let i = 0; i < cuts; i += 1) {
+      for (let j = 0; j < 2 * (cuts - i) - 1; j += 1) {
         const offset = j % 2 === 0 ? 1 / 3 : 2 / 3;
-        const la = (i + offset) / CUTS;
-        const lb = ((j >> 1) + offset) / CUTS;
+        const la = (i + offset) / cuts;
+        const lb = ((j >> 1) + offset) / cuts;
         quadratic(la, lb, n);
         quadraticGradient(la, lb, da, db);
         let [x, y, xa, xb, ya, yb, tx, ty] = [0, 0, 0, 0, 0, 0, 0, 0];
@@ -80,12 +84,18 @@ export function cellFloor(
         }
         const [px, py] = toCaller(placement, x, y);
         if (!within(px, py)) continue;
-        area.push((Math.abs(xa * yb - xb * ya) * placement.scale ** 2) / (2 * CUTS * CUTS));
+        area.push((Math.abs(xa * yb - xb * ya) * placement.scale ** 2) / (2 * cuts * cuts));
         stress.push(Math.hypot(tx, ty));
       }
     }
   }
   return { area: Float64Array.from(area), stress: Float64Array.from(stress) };
+}
+
+/** Root of a triangle's area. */
+function sizeOf({ x, y, triangles }: Mesh, t: number): number {
+  const [a, b, c] = triangles.subarray(6 * t, 6 * t + 3);
+  return Math.sqrt(Math.abs((x[b] - x[a]) * (y[c] - y[a]) - (x[c] - x[a]) * (y[b] - y[a])) / 2);
 }
 
 /** Share of the area whose stress lies within the two bounds. */
