@@ -129,7 +129,7 @@ export function splitTable(chip: Chip, result: Result): Table {
               { digits: 2, signed: true },
             ),
             figures(
-              'allowed ±',
+              'allowed\u00a0±',
               'share',
               rows.map(({ target }) => target?.within ?? null),
               { digits: 2 },
@@ -151,7 +151,7 @@ export function splitTable(chip: Chip, result: Result): Table {
         rows.map(({ flow }) => flow),
       ),
       figures(
-        'numerics ±',
+        'numerics\u00a0±',
         'share',
         rows.map(({ band }) => band),
         { digits: 2, unit: '%' },
@@ -159,13 +159,13 @@ export function splitTable(chip: Chip, result: Result): Table {
       ...(known
         ? [
             figures(
-              'making ±',
+              'making\u00a0±',
               'share',
               rows.map(({ making }) => making?.likely ?? null),
               { digits: 2, unit: '%' },
             ),
             figures(
-              'at worst ±',
+              'at worst\u00a0±',
               'share',
               rows.map(({ making }) => making?.worst ?? null),
               { digits: 2, unit: '%' },

@@ -91,25 +91,10 @@ export function holeLabels(labels: Labels, marks: readonly Mark[]): Item[] {
     const radius = Math.max(0.9, inUnit(metres(diameter / 2), 'mm') * scale);
     return { left: x - radius, right: x + radius, top: y - radius, bottom: y + radius };
   });
-  return marks.flatMap(({ number, name }, i): Item[] => {
-    const text = named ? `${number} ${short(name)}`.trim() : number;
-    if (text === '') return [];
+  const placeFor = (text: string, at: Box): { readonly cost: number; readonly box: Box } => {
     const wide = widthOf(text, HOLE_SIZE);
-    const at = holes[i]!;
-    const [x, y] = [(at.left + at.right) / 2, (at.top + at.bottom) / 2];
-    const gap = 0.9;
-    const tries = [
-      [x - wide / 2, at.top - gap - HOLE_SIZE],
-      [x - wide / 2, at.bottom + gap],
-      [at.right + gap, y - HOLE_SIZE / 2],
-      [at.left - gap - wide, y - HOLE_SIZE / 2],
-      [at.right + gap / 2, at.top - gap - HOLE_SIZE],
-      [at.left - gap / 2 - wide, at.top - gap - HOLE_SIZE],
-      [at.right + gap / 2, at.bottom + gap],
-      [at.left - gap / 2 - wide, at.bottom + gap],
-    ] as const;
     let best = { cost: Number.POSITIVE_INFINITY, box: at };
-    for (const [left, top] of tries) {
+    for (const [left, top] of around(at, wide)) {
       const box: Box = { left, right: left + wide, top, bottom: top + HOLE_SIZE };
       let cost = lines.reduce((sum, [a, b]) => sum + (crosses(a, b, box) ? 1 : 0), 0);
       for (const other of [...taken, ...holes]) if (!apart(box, other)) cost += 8;
@@ -117,6 +102,22 @@ export function holeLabels(labels: Labels, marks: readonly Mark[]): Item[] {
       if (box.top < frame.top || box.bottom > frame.bottom) cost += 4;
       if (cost < best.cost) best = { cost, box };
       if (cost === 0) break;
+    }
+    return best;
+  };
+  return marks.flatMap(({ number, name }, i): Item[] => {
+    const full = named ? `${number} ${short(name)}`.trim() : number;
+    if (full === '') return [];
+    const at = holes[i]!;
+    let text = full;
+    let best = placeFor(full, at);
+    // a name that would lie across a channel or another name gives way to its number
+    if (best.cost > 0 && number !== '' && number !== full) {
+      const brief = placeFor(number, at);
+      if (brief.cost < best.cost) {
+        text = number;
+        best = brief;
+      }
     }
     taken.push(best.box);
     return [
@@ -127,10 +128,26 @@ export function holeLabels(labels: Labels, marks: readonly Mark[]): Item[] {
         size: HOLE_SIZE,
         anchor: 'start',
         strong: number !== '',
-        cleared: true,
       },
     ];
   });
+}
+
+/** Upper left corners of the places round a hole that a label is tried at, the best to read first. */
+function around(at: Box, wide: Mm): readonly At[] {
+  const [x, y] = [(at.left + at.right) / 2, (at.top + at.bottom) / 2];
+  const gap = 0.9;
+  const [above, below] = [at.top - gap - HOLE_SIZE, at.bottom + gap];
+  return [
+    [x - wide / 2, above],
+    [x - wide / 2, below],
+    [at.right + gap, y - HOLE_SIZE / 2],
+    [at.left - gap - wide, y - HOLE_SIZE / 2],
+    [at.right + gap / 2, above],
+    [at.left - gap / 2 - wide, above],
+    [at.right + gap / 2, below],
+    [at.left - gap / 2 - wide, below],
+  ];
 }
 
 /** Places beside a channel to try its number at: along its longest stretches, the middle first, on either side. */

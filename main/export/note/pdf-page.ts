@@ -154,16 +154,25 @@ export class Sheet {
         used = wide;
         continue;
       }
-      // a word wider than the line goes on where the line has room for a bit of it
+      // a word wider than the line is broken after its hyphens and the like, and else anywhere
       if (space > 0 && width - used > 8 * size) {
         put(' ', word.face);
         used += space;
       } else if (line.length > 0) turn();
-      for (const { segment } of graphemes.segment(word.text)) {
-        const more = this.fonts.width(segment, word.face, size);
-        if (used + more > width && line.length > 0) turn();
-        put(segment, word.face);
-        used += more;
+      for (const part of word.text.split(/(?<=[-_/.,:;|])/)) {
+        const all = this.fonts.width(part, word.face, size);
+        if (used + all > width && all <= width && line.length > 0) turn();
+        if (used + all <= width) {
+          put(part, word.face);
+          used += all;
+          continue;
+        }
+        for (const { segment } of graphemes.segment(part)) {
+          const more = this.fonts.width(segment, word.face, size);
+          if (used + more > width && line.length > 0) turn();
+          put(segment, word.face);
+          used += more;
+        }
       }
     }
     if (line.length > 0) turn();

@@ -148,8 +148,10 @@ export function drawTable(
   const element = sheet.begin(parent, 'Table');
   head(sheet, element, sets, headLines, units, size);
   for (const [i, row] of rows.entries()) {
-    // what is said under a table stays with its last row
-    const below = i === rows.length - 1 ? footHeight : 0;
+    // what is said under a table stays with its last row,
+    // and the last row with the one before it
+    const last = rows.length - 1;
+    const below = i === last ? footHeight : i === last - 1 ? rows[last]!.height + footHeight : 0;
     if (sheet.need(row.height + below)) {
       sheet.aside(() => {
         const [line] = sheet.lines([`${table.title}, continued`], FOOT, sheet.width);

@@ -9,7 +9,7 @@ export function tableCsv({ columns, rows }: Table): string {
 }
 
 const headText = (head: string, unit: string): string => {
-  const name = head === '' ? 'met' : head;
+  const name = head === '' ? 'met' : head.replaceAll('\u00a0', ' ');
   return unit ? `${name} (${unit})` : name;
 };
 
