@@ -31,11 +31,14 @@ export function deviation(drawn: Paths64, made: Paths64, work: Work): Deviation 
   let at: [number, number] | null = null;
   let k = 0;
   for (const path of off) {
+    // Where there is nothing to measure from, what is missing is as thick as it is.
+    const { left, top, right, bottom } = Clipper.getBounds(path);
+    const most = Math.min(right - left, bottom - top);
     for (const { x, y } of path) {
       k += 1;
       if (k % stride !== 0) continue;
       work.at(0.5 + (0.5 * k) / count);
-      const d = Math.max(fromDrawn.distance(x, y), fromMade.distance(x, y));
+      const d = Math.min(most, Math.max(fromDrawn.distance(x, y), fromMade.distance(x, y)));
       if (d > furthest) [furthest, at] = [d, [x, y]];
     }
   }
@@ -114,6 +117,6 @@ class Edges {
       const t = dd > 0 ? Math.min(1, Math.max(0, ((x - ends[k]) * dx + (y - ends[k + 1]) * dy) / dd)) : 0;
       best = Math.min(best, Math.hypot(x - ends[k] - t * dx, y - ends[k + 1] - t * dy));
     }
-    return best === Infinity ? 0 : best;
+    return best;
   }
 }

@@ -5,6 +5,7 @@ import { readGraph } from '../../solver/chip/read-graph.ts';
 import type { Notes } from './bring-in.ts';
 import type { DrawnLayer } from './drawing.ts';
 import { type Frame, pathOf } from './recognise/plane.ts';
+import { circleNear } from './recognise/walls.ts';
 
 /** A circle on the chip, nm. */
 export interface Round {
@@ -18,12 +19,13 @@ const FILLS = 0.95;
 const SIDES = 0.03;
 
 /** The circle that an outline is, or null; what a channel's mouth takes off it is let pass. */
-export function roundOf(outline: Paths64[number]): Round | null {
+export function roundOf(outline: Path64): Round | null {
   const { left, top, right, bottom } = Clipper.getBounds(outline);
-  const [w, h] = [right - left, bottom - top];
-  if (Math.abs(w - h) > SIDES * Math.max(w, h) || outline.length < 8) return null;
-  const radius = Math.max(w, h) / 2;
-  const [x, y] = [(left + right) / 2, (top + bottom) / 2];
+  const size = Math.max(right - left, bottom - top);
+  if (outline.length < 8 || Math.min(right - left, bottom - top) < (1 - SIDES) * size) return null;
+  const circle = circleNear(outline, 0, outline.length - 1);
+  if (!circle) return null;
+  const { x, y, r: radius } = circle;
   if (Math.abs(Clipper.area(outline)) < FILLS * Math.PI * radius * radius) return null;
   if (outline.some((p) => Math.hypot(p.x - x, p.y - y) > radius * (1 + SIDES))) return null;
   return { x, y, radius };

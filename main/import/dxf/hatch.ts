@@ -20,7 +20,7 @@ class Groups {
     const k = this.#k;
     if (codes[k] !== code) throw new Unlike();
     this.#k += 1;
-    return numberFrom(values[k], line + 2 * k + 2, code);
+    return numberFrom(values[k], line + 2 * k + 3, code);
   }
 
   maybe(code: number, fallback: number): number {

@@ -101,13 +101,13 @@ export function numberFrom(text: string, line: number, code: number): number {
 
 export function numberOf(entity: Entity, code: number, fallback: number): number {
   const k = entity.codes.indexOf(code);
-  return k < 0 ? fallback : numberFrom(entity.values[k], entity.line + 2 * k + 2, code);
+  return k < 0 ? fallback : numberFrom(entity.values[k], entity.line + 2 * k + 3, code);
 }
 
 /** A number that must be there. */
 export function needed(entity: Entity, code: number): number {
   const k = entity.codes.indexOf(code);
-  if (k >= 0) return numberFrom(entity.values[k], entity.line + 2 * k + 2, code);
+  if (k >= 0) return numberFrom(entity.values[k], entity.line + 2 * k + 3, code);
   throw new Problem(
     'missing',
     `A ${entity.type} has no group ${code}.`,
@@ -120,7 +120,7 @@ export function needed(entity: Entity, code: number): number {
 export function numbersOf(entity: Entity, code: number): number[] {
   const out: number[] = [];
   entity.codes.forEach((found, k) => {
-    if (found === code) out.push(numberFrom(entity.values[k], entity.line + 2 * k + 2, code));
+    if (found === code) out.push(numberFrom(entity.values[k], entity.line + 2 * k + 3, code));
   });
   return out;
 }

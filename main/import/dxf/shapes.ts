@@ -119,7 +119,7 @@ function lightPolyline(entity: Entity): Drawn {
   let constant = 0;
   let flags = 0;
   codes.forEach((code, k) => {
-    const at = start + 2 * k + 2;
+    const at = start + 2 * k + 3;
     const last = vertices.length - 3;
     if (code === 70) flags = numberFrom(values[k], at, code);
     else if (code === 43) constant = numberFrom(values[k], at, code);

@@ -22,6 +22,8 @@ export interface Course {
 const SMOOTH = 2e-3;
 /** Most radians of one rounded corner; wider bends get several. */
 const WIDEST = 1.75;
+/** Most radians of one step: its chord must say which way it goes. */
+const LONGEST = 4.7;
 /** Radii that differ by less are one, nm and share. */
 const SAME_NM = 6;
 const SAME_SHARE = 1e-3;
@@ -54,10 +56,7 @@ export function coursesOf(steps: readonly Step[], width: number): Course[] {
 function bend(builder: Builder, { x0, y0, sweep, radius, x1, y1 }: Step): void {
   const count = Math.ceil(Math.abs(sweep) / WIDEST - 1e-9);
   const by = sweep / count;
-  const [tx, ty] = tangent({ x0, y0, x1, y1, sweep });
-  const sign = Math.sign(sweep);
-  // Centre to the left of the way for a counter-clockwise bend.
-  const [cx, cy] = [x0 - sign * radius * ty, y0 + sign * radius * tx];
+  const [cx, cy] = centreOf({ x0, y0, x1, y1, sweep, radius });
   let [ax, ay] = [x0, y0];
   for (let k = 1; k <= count; k += 1) {
     const angle = Math.atan2(y0 - cy, x0 - cx) + by * k;
@@ -89,6 +88,7 @@ function merged(steps: readonly Step[]): Step[] {
   for (const step of steps) {
     if (Math.hypot(step.x1 - step.x0, step.y1 - step.y0) < 0.5) continue;
     const last = out.at(-1);
+    if (step.sweep !== 0 && goesOn(out, step)) continue;
     if (last && last.sweep === 0 && step.sweep === 0) {
       const [dx, dy] = [step.x1 - last.x0, step.y1 - last.y0];
       const length = Math.hypot(dx, dy);
@@ -102,6 +102,29 @@ function merged(steps: readonly Step[]): Step[] {
     out.push(step);
   }
   return out;
+}
+
+/** Takes an arc into the one before it, if both lie on one circle with next to nothing between them. */
+function goesOn(out: Step[], step: Step): boolean {
+  const before = out.at(-1)?.sweep === 0 ? out.at(-2) : out.at(-1);
+  if (!before || before.sweep * step.sweep <= 0) return false;
+  const [ax, ay] = centreOf(before);
+  const [bx, by] = centreOf(step);
+  const near = 4 * (SAME_NM + SAME_SHARE * step.radius);
+  if (Math.hypot(ax - bx, ay - by) > near || Math.abs(before.radius - step.radius) > near) return false;
+  const gap = Math.hypot(step.x0 - before.x1, step.y0 - before.y1);
+  if (gap > 0.1 * step.radius || Math.abs(before.sweep) + Math.abs(step.sweep) > LONGEST) return false;
+  if (out.at(-1) !== before) out.pop();
+  const sweep = before.sweep + step.sweep + (Math.sign(step.sweep) * gap) / step.radius;
+  const longer = Math.abs(before.sweep) > Math.abs(step.sweep) ? before.radius : step.radius;
+  out[out.length - 1] = { ...before, x1: step.x1, y1: step.y1, sweep, radius: longer };
+  return true;
+}
+
+function centreOf({ x0, y0, x1, y1, sweep, radius }: Step): [number, number] {
+  const [tx, ty] = tangent({ x0, y0, x1, y1, sweep });
+  const sign = Math.sign(sweep);
+  return [x0 - sign * radius * ty, y0 + sign * radius * tx];
 }
 
 class Builder {

@@ -67,6 +67,13 @@ function joinKnot(knot: Knot, strips: readonly Strip[], places: readonly [EndPla
   if (arms.length === 0) return;
   const widest = arms.reduce((most, { end }) => Math.max(most, end.width), 0);
   if (arms.length === 1 || knot.area > LARGEST * widest * widest) {
+    const [only] = arms;
+    // A soft strip stops short of the wall that closes it: the ground between is as long as its width says.
+    if (arms.length === 1 && strips[only.of.strip].soft && knot.area <= 1.2 * widest * widest) {
+      const by = knot.area / only.end.width;
+      settle(only, only.end.x + by * only.end.ux, only.end.y + by * only.end.uy);
+      return;
+    }
     const room = Math.sqrt(knot.area) / 4;
     if (knot.area > 1.2 * widest * widest)
       for (const { end, place } of arms) place.into = Math.min(INTO * end.width, room);
@@ -275,8 +282,13 @@ function softCourses(
   places: readonly [EndPlace, EndPlace],
   out: Joined,
 ): void {
-  const points = samples.map(({ x, y, width }, k) => {
-    const at = k === 0 ? places[0] : k === samples.length - 1 ? places[1] : { x, y };
+  // An end that was led on far keeps the point where the walls told the way.
+  const led = places.map(({ x, y }, k) => {
+    const end = samples[k === 0 ? 0 : samples.length - 1];
+    return Math.hypot(x - end.x, y - end.y) > 0.1 * end.width ? [{ x, y, width: end.width }] : [];
+  });
+  const points = [...led[0], ...samples, ...led[1]].map(({ x, y, width }, k, all) => {
+    const at = k === 0 ? places[0] : k === all.length - 1 ? places[1] : { x, y };
     return { x: Math.round(at.x), y: Math.round(at.y), width: Math.max(1, Math.round(width)) };
   });
   const evenEnough = (a: number, b: number): boolean => Math.abs(a - b) <= 0.01 * Math.max(a, b);

@@ -112,6 +112,10 @@ function softStrip(chain: readonly number[], triangles: Triangles): Strip | null
     if (k > 0) length += Math.hypot(samples[k].x - samples[k - 1].x, samples[k].y - samples[k - 1].y);
   }
   if (length < LONGEST_KNOT * widest || narrowest < 0.2 * widest) return null;
+  samples.unshift(...ledTo(samples[0], samples[2], rightRun[0], leftRun[0]));
+  samples.push(
+    ...ledTo(samples[samples.length - 1], samples[samples.length - 3], rightRun.at(-1)!, leftRun.at(-1)!),
+  );
   const kept = simplified(samples, Math.max(OFF_NM, OFF * narrowest));
   const end = (a: Sample, b: Sample): StripEnd => {
     const d = Math.hypot(a.x - b.x, a.y - b.y);
@@ -124,8 +128,21 @@ function softStrip(chain: readonly number[], triangles: Triangles): Strip | null
     from: 0,
     to: length,
     length,
-    ends: [end(kept[0], kept[1]), end(kept[last], kept[last - 1])],
+    ends: [end(kept[0], samples[2]), end(kept[last], samples[samples.length - 3])],
   };
+}
+
+/** A sample where the chain ends: the last one led on, along the way from the one before, to between its two walls. */
+function ledTo(
+  end: Sample,
+  before: Sample,
+  a: readonly [number, number],
+  b: readonly [number, number],
+): Sample[] {
+  const d = Math.hypot(end.x - before.x, end.y - before.y);
+  const [ux, uy] = [(end.x - before.x) / d, (end.y - before.y) / d];
+  const by = ((a[0] + b[0]) / 2 - end.x) * ux + ((a[1] + b[1]) / 2 - end.y) * uy;
+  return by > 0 && by < 2 * end.width ? [{ x: end.x + by * ux, y: end.y + by * uy, width: end.width }] : [];
 }
 
 /** Points half way between each point of one wall and the other wall, where the walls face each other. */

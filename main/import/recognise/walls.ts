@@ -22,6 +22,9 @@ const SAGITTA_SHARE = 0.012;
 /** Vertices lie this close to the circle: rounding, nm, and cubic curves that stand for circles. */
 const ON_CIRCLE = 2.5;
 const ON_CIRCLE_SHARE = 3e-4;
+const ON_CIRCLE_MOST = 150;
+/** Arcs of more than this (radians) are cut, so that a gap between two has one stretch. */
+const LONGEST = 4.7;
 const MOST_TURN = 0.7;
 const LEAST_CHORDS = 3;
 /** With this many chords coarse ones are believed. */
@@ -123,18 +126,16 @@ function arcRun(path: Path64, from: number): { walls: Wall[]; to: number } | nul
   }
   if (!found || end - from < LEAST_CHORDS) return null;
   if (!even(path, from, end)) return null;
+  found = circleNear(path, from, end) ?? found;
+  const { x: cx, y: cy, r: radius } = found;
   const sign = Math.sign(first);
-  const angle = (k: number): number => Math.atan2(path[k % n].y - found.y, path[k % n].x - found.x);
-  // An arc of more than half a turn is cut, so that its ends say which way it goes.
+  const angle = (k: number): number => Math.atan2(path[k % n].y - cy, path[k % n].x - cx);
   const between = (a: number, b: number): number => {
     let by = (angle(b) - angle(a)) * sign;
     while (by <= 0) by += 2 * Math.PI;
     return by * sign;
   };
-  const pieces = Math.max(
-    1,
-    Math.ceil((end - from) / Math.max(1, Math.floor(((end - from) * 3) / Math.abs(sweep || 1)))),
-  );
+  const pieces = Math.ceil(Math.abs(sweep) / LONGEST);
   const marks = Array.from({ length: pieces + 1 }, (_, k) => from + Math.round(((end - from) * k) / pieces));
   const walls = marks.slice(1).map((to, k) => {
     const [a, b] = [path[marks[k] % n], path[to % n]];
@@ -144,9 +145,9 @@ function arcRun(path: Path64, from: number): { walls: Wall[]; to: number } | nul
       x1: b.x,
       y1: b.y,
       sweep: between(marks[k], to),
-      cx: found.x,
-      cy: found.y,
-      radius: found.r,
+      cx,
+      cy,
+      radius,
     };
   });
   return { walls, to: end };
@@ -167,7 +168,7 @@ function even(path: Path64, from: number, to: number): boolean {
 
 function fits(path: Path64, from: number, to: number, { x, y, r }: Circle): boolean {
   const n = path.length;
-  const tolerance = Math.max(ON_CIRCLE, r * ON_CIRCLE_SHARE);
+  const tolerance = Math.max(ON_CIRCLE, Math.min(r * ON_CIRCLE_SHARE, ON_CIRCLE_MOST));
   // Few coarse chords may be the sides of a polygon: any even trapezoid has a circle around it.
   const sagitta = to - from < SURE ? SAGITTA : Math.max(SAGITTA, r * SAGITTA_SHARE);
   // The newest chords are looked at each time, the older ones in samples.
@@ -182,6 +183,33 @@ function fits(path: Path64, from: number, to: number, { x, y, r }: Circle): bool
     if (!(half < r && r - Math.sqrt(r * r - half * half) <= sagitta)) return false;
   }
   return true;
+}
+
+/** The circle with the least squares of its equation over the vertices of a run. */
+export function circleNear(path: Path64, from: number, to: number): Circle | null {
+  const n = path.length;
+  const [ox, oy] = [path[from % n].x, path[from % n].y];
+  let [count, sx, sy, sxx, sxy, syy, sxz, syz, sz] = [0, 0, 0, 0, 0, 0, 0, 0, 0];
+  for (let k = from; k <= to; k += 1) {
+    const [x, y] = [path[k % n].x - ox, path[k % n].y - oy];
+    const z = x * x + y * y;
+    count += 1;
+    sx += x;
+    sy += y;
+    sxx += x * x;
+    sxy += x * y;
+    syy += y * y;
+    sxz += x * z;
+    syz += y * z;
+    sz += z;
+  }
+  const [a, b, c] = [sxx - (sx * sx) / count, sxy - (sx * sy) / count, syy - (sy * sy) / count];
+  const [d, e] = [(sxz - (sx * sz) / count) / 2, (syz - (sy * sz) / count) / 2];
+  const det = a * c - b * b;
+  if (!(det > 1e-12 * a * c)) return null;
+  const [x, y] = [(d * c - e * b) / det, (a * e - b * d) / det];
+  const r = Math.sqrt(sz / count - (2 * (x * sx + y * sy)) / count + x * x + y * y);
+  return { x: x + ox, y: y + oy, r };
 }
 
 function circleThrough(
