@@ -9,7 +9,7 @@ import { wrapped } from './width.ts';
 const driveText = (drive: Drive): string => {
   switch (drive.kind) {
     case 'pressure':
-      return formatQuantity(drive.pressure, 'pressure', { digits: 5 });
+      return drive.pressure === 0 ? 'open' : formatQuantity(drive.pressure, 'pressure', { digits: 5 });
     case 'flow':
       return formatQuantity(drive.flow, 'flow', { digits: 5 });
     case 'head':
@@ -170,7 +170,7 @@ function drives(chip: Chip, { restored, wider, result }: AsBuilt, width: number)
     lines.push(
       ...wrapped(
         wider.met
-          ? 'They would be met if open ports were held at a pressure too'
+          ? 'The targets would be met if open ports were held at a pressure too'
           : `Nearer still if open ports were held at a pressure too (${nearest(chip, wider)})`,
         width,
       ),

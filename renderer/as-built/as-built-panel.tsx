@@ -126,7 +126,7 @@ export function AsBuiltPanel() {
       <textarea
         id={`${id}-table`}
         className="measured"
-        rows={9}
+        rows={7}
         spellCheck={false}
         placeholder={'part,what,value (um),uncertainty\nflow,depth,48.6,0.3\nfeed,width,203,1'}
         value={text}
@@ -139,9 +139,9 @@ export function AsBuiltPanel() {
           {says}
         </p>
       )}
-      <div className="row">
+      <div className="row measured-verbs">
         <button type="button" className="strong-button" disabled={busy} onClick={() => void work(chosen)}>
-          Compare
+          Compare with the drawing
         </button>
         <button type="button" className="quiet" onClick={() => write(templateOf(chip))}>
           Begin from the drawn sizes

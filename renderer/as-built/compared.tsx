@@ -127,7 +127,7 @@ export function ComparedChips({
           {assumed > 0 && `, as drawn: ${assumed}`}. {says.join(' ')}
         </p>
         <div className="row">
-          <button type="button" onClick={onKeep}>
+          <button type="button" className="quiet" onClick={onKeep}>
             Keep the made chip as a trial
           </button>
         </div>
@@ -142,7 +142,7 @@ export function ComparedChips({
           <>
             <p>
               {wider.met
-                ? 'With open ports held at a pressure too, they would be met:'
+                ? 'With open ports held at a pressure too, the targets would be met:'
                 : `With open ports held at a pressure too it comes nearer: ${nearWords(chip, wider)}.`}
             </p>
             <Settings restored={wider} button="Set these, open ports too" onSet={() => onSet(wider)} />

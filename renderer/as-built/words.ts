@@ -22,7 +22,7 @@ export function shareWith(share: number | null, making: Making | undefined): str
 export function driveWords(drive: Drive): string {
   switch (drive.kind) {
     case 'pressure':
-      return figure(drive.pressure, 'pressure', { digits: 5 });
+      return drive.pressure === 0 ? 'open' : figure(drive.pressure, 'pressure', { digits: 5 });
     case 'flow':
       return figure(drive.flow, 'flow', { digits: 5 });
     case 'head':

@@ -14,6 +14,8 @@ export interface Column {
   /** A unit of its own. */
   readonly unit?: string;
   readonly signed?: boolean;
+  /** Significant digits of the largest figure, where fewer say enough. */
+  readonly digits?: number;
   /** What is typed into a cell is this quantity of the row's part. */
   readonly edits?: 'name' | 'width' | 'hole' | 'wanted' | 'within';
   /** Width in the table, px. */
@@ -59,6 +61,9 @@ export function writingOf(column: Column, rows: readonly Row[], index: number): 
   if (largest === 0) return { unit, decimals: column.kind === 'share' ? 2 : 0 };
   const places = (value: number, digits: number): number =>
     digits - 1 - Math.floor(Math.log10(Math.abs(inUnit(value, unit))) + 1e-9);
+  if (column.digits !== undefined) {
+    return { unit, decimals: Math.min(MOST_DECIMALS, Math.max(0, places(largest, column.digits))) };
+  }
   // a few tiny figures do not make all others long
   const decimals = Math.max(
     places(largest, column.signed ? 2 : DIGITS),

@@ -66,8 +66,8 @@ function ports(chip: Chip, result: Result | null): Table {
     { id: 'hole', head: 'hole', kind: 'length', unit: 'um', edits: 'hole', wide: 88 },
     ...(result?.making
       ? ([
-          { id: 'making', head: '± from making', kind: 'share', unit: '%', wide: 112 },
-          { id: 'chief', head: 'most from', wide: 208 },
+          { id: 'making', head: '± making', kind: 'share', unit: '%', digits: 2, wide: 96 },
+          { id: 'chief', head: 'most from', wide: 224 },
         ] as const)
       : []),
   ];
@@ -90,7 +90,7 @@ function ports(chip: Chip, result: Result | null): Table {
         there?.flow ?? null,
         there?.pressure ?? null,
         port.diameter / 1e9,
-        ...(result?.making ? [there?.making?.share.likely ?? null, chiefWords(there?.making?.share)] : []),
+        ...(result?.making ? [there?.making?.share.likely || null, chiefWords(there?.making?.share)] : []),
       ],
       ...(gets && !gets.met && { missed: [3, 4] }),
     };
@@ -121,7 +121,7 @@ function channels(chip: Chip, result: Result | null): Table {
     { id: 'reynolds', head: 'Re', kind: 'number', wide: 64 },
     { id: 'time', head: 'time', kind: 'time', unit: 's', wide: 80 },
     ...(result?.making
-      ? ([{ id: 'making', head: 'shear ± making', kind: 'share', unit: '%', wide: 120 }] as const)
+      ? ([{ id: 'making', head: 'shear ± making', kind: 'share', unit: '%', digits: 2, wide: 120 }] as const)
       : []),
   ];
   const solved = new Map(result?.channels.map((channel) => [channel.id, channel]));

@@ -58,31 +58,37 @@ export function splitAnswer(evidence: Evidence): Answer {
     ]);
   // less than a hundredth of a per cent is nothing that anyone can measure
   const off = strong(percent(Math.max(1e-4, Math.abs(offOf(worst)))));
-  const made = makingSays(known, within);
-  if (targets.length === 1)
-    return answer('yes', worst, [`Yes: ${nameOf(worst)} is within `, off, ' of its target.', ...made]);
+  const made = mostMoved(known, within);
   const all = targets.length === 2 ? 'Both' : `All ${count(targets.length)}`;
+  if (made)
+    return answer('yes', made, [
+      targets.length === 1 ? `Yes: ${nameOf(worst)} is within ` : `${all} ${noun(targets)} within `,
+      off,
+      '; making adds ± ',
+      strong(percent(made.making!.likely)),
+      reach(made) > within(made) ? `, ${percent(within(made))} is allowed.` : '.',
+    ]);
+  if (targets.length === 1)
+    return answer('yes', worst, [`Yes: ${nameOf(worst)} is within `, off, ' of its target.']);
   const wish = chip.targets.every((target) => 'share' in target) ? 'share' : 'target';
   return answer('yes', worst, [
     `${all} ${noun(targets)} within `,
     off,
     ` of their ${wish}; the worst is ${nameOf(worst)}.`,
-    ...made,
   ]);
 }
 
-/** What tolerances do to the target that they bring furthest: nothing where none are given. */
-function makingSays(known: readonly TargetResult[], within: (target: TargetResult) => number): Run[] {
-  const reach = (target: TargetResult): number => Math.abs(offOf(target)) + (target.making?.likely ?? 0);
+/** How far a target may come to lie off, as likely as the tolerances are. */
+const reach = (target: TargetResult): number => Math.abs(offOf(target)) + (target.making?.likely ?? 0);
+
+/** The target that tolerances bring furthest; none where they are not given or move nothing that can be measured. */
+function mostMoved(
+  known: readonly TargetResult[],
+  within: (target: TargetResult) => number,
+): TargetResult | null {
   const moved = known.filter((target) => (target.making?.likely ?? 0) > 1e-4);
-  if (moved.length === 0) return [];
-  const most = moved.reduce((a, b) => (reach(b) / within(b) > reach(a) / within(a) ? b : a));
-  const beyond = reach(most) > within(most) ? `, where ${percent(within(most))} is allowed` : '';
-  return [
-    known.length === 1 ? ' Making moves it by ± ' : ` Making moves ${nameOf(most)} by ± `,
-    strong(percent(most.making!.likely)),
-    `${beyond}.`,
-  ];
+  if (moved.length === 0) return null;
+  return moved.reduce((a, b) => (reach(b) / within(b) > reach(a) / within(a) ? b : a));
 }
 
 /** "wells" where all names are one word and a number, else "outlets" or "targets". */

@@ -84,19 +84,17 @@ describe('Does it split right?', () => {
         ),
       );
     expect(one(0)).toBe('Yes: well 1 is within 0.80 % of its target.');
-    expect(one(0.004)).toBe('Yes: well 1 is within 0.80 % of its target. Making moves it by ± 0.40 %.');
+    expect(one(0.004)).toBe('Yes: well 1 is within 0.80 %; making adds ± 0.40 %.');
     expect(one(0.022)).toBe(
-      'Yes: well 1 is within 0.80 % of its target. Making moves it by ± 2.2 %, where 2.0 % is allowed.',
+      'Yes: well 1 is within 0.80 %; making adds ± 2.2 %, 2.0 % is allowed.',
     );
     const targets = [
       { ...target('well 1', 0.5, 0.5, true), ...by(0.03) },
       { ...target('well 2', 0.5, 0.5, true), ...by(0.01) },
     ];
-    expect(
-      text(ask('split', withTargets(wish('well 1', 0.5), wish('well 2', 0.5)), resultOf({ targets }))),
-    ).toBe(
-      'Both wells within 0.010 % of their share; the worst is well 1. Making moves well 1 by ± 3.0 %, where 2.0 % is allowed.',
-    );
+    const both = ask('split', withTargets(wish('well 1', 0.5), wish('well 2', 0.5)), resultOf({ targets }));
+    expect(text(both)).toBe('Both wells within 0.010 %; making adds ± 3.0 %, 2.0 % is allowed.');
+    expect(both.culprit).toBe('port:well 1');
   });
   test('unresolved flow is not known', () => {
     const answer = ask(

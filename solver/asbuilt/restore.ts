@@ -51,7 +51,7 @@ const NOISE = 1e-6;
 const SETTLED = 1e-7;
 /** Of full vacuum: no suction goes further. Pa, gauge. */
 const VACUUM = -95_000;
-/** A drive that would change by less is left as it is. */
+/** A drive that would change by less than this of what it is, or of the pressures around, is left as it is. */
 const LEAST_CHANGE = 1e-4;
 /** Digits in which a drive is set. */
 const DIGITS = 5;
@@ -106,8 +106,9 @@ export function restoreDrives(
   }
   const settings = ports.flatMap((index): Setting[] => {
     const [before, after] = [chip.ports[index].drive, best.chip.ports[index].drive];
+    const moved = Math.abs(best.value[index] - first.value[index]);
+    if (moved <= LEAST_CHANGE * scaleOf(first, index)) return [];
     const to = rounded(after);
-    if (Math.abs(imposedBy(to) - imposedBy(before)) <= LEAST_CHANGE * Math.abs(imposedBy(before))) return [];
     return [{ port: chip.ports[index].id, from: before, to, held: heldBy(best, index) }];
   });
   const set = withDrives(chip, new Map(settings.map(({ port, to }) => [port, to])));

@@ -27,7 +27,7 @@ test('measurements typed, the made chip beside the drawn one, drives set and tak
     await page.locator('.frame').waitFor();
     await answered(page);
     await page
-      .getByText(/Making moves/)
+      .getByText(/making adds ±/)
       .first()
       .waitFor();
     await page.locator('.sheet-surface').first().focus();
@@ -41,8 +41,8 @@ test('measurements typed, the made chip beside the drawn one, drives set and tak
     await page.keyboard.insertText('part,what,value\nlevel 9 arm 1,width,150\n');
     await page.keyboard.press('Tab');
     await page.keyboard.press('Enter');
-    await page.getByRole('alert').waitFor();
-    expect(await page.getByRole('alert').textContent()).toMatch(
+    await page.locator('.card p.fault').waitFor();
+    expect(await page.locator('.card p.fault').textContent()).toMatch(
       /^Row 2, column part: The chip has no channel/,
     );
     await noSerious(page);

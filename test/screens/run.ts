@@ -85,7 +85,7 @@ const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
     await page
       .getByLabel('Table, typed or pasted')
       .fill('part,what,value (um),uncertainty\nflow,depth,78.5,0.4\nlevel 3 arm 1,width,126,1\n');
-    await page.getByRole('button', { name: 'Compare' }).click();
+    await page.getByRole('button', { name: 'Compare with the drawing' }).click();
     await page.getByRole('region', { name: 'Drawn and made' }).waitFor({ timeout: 120_000 });
   },
   plots: async (page) => {

@@ -8,8 +8,9 @@ import { readChip } from '../../solver/chip/schema-chip.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { chipOf, line } from '../checks/chips.ts';
 
+const share = fc.oneof(fc.constant(0), fc.double({ min: 1e-9, max: 1, noNaN: true }));
 const tolerance: fc.Arbitrary<Tolerance> = fc.oneof(
-  fc.double({ min: 0, max: 0.99, noNaN: true }).map((share) => ({ share: share + 0 })),
+  share.map((value) => ({ share: value * 0.99 })),
   fc.nat(1_000_000).map((length) => ({ length })),
 );
 const own = fc.record({ depth: tolerance, width: tolerance }, { requiredKeys: [] });
@@ -17,7 +18,7 @@ const ofLayer = fc.record(
   {
     depth: tolerance,
     width: tolerance,
-    common: fc.double({ min: 0, max: 1, noNaN: true }).map((c) => c + 0),
+    common: share,
   },
   { requiredKeys: [] },
 );
