@@ -1,0 +1,424 @@
+import { mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join, resolve } from 'node:path';
+import { gzipSync } from 'node:zlib';
+import type { CDPSession, Page } from 'playwright-core';
+import { splitTree } from '../../renderer/makers/split-tree.ts';
+import { emptyChip } from '../../renderer/testing/chips.ts';
+import { writeDescription } from '../../solver/chip/description-write.ts';
+import { answered, type Sitting, sit } from '../page/desk.ts';
+import type { BenchRow } from './row.ts';
+
+/**
+ * The page in Chromium. Script time is what the page's own thread spends in scripts, by the browser's own
+ * count, over the frames that were painted: a share of a frame of 60 a second. Answers are timed in the
+ * page from the key or pointer to the changed words, the wait for the next frame left out.
+ */
+
+const FRAME = 1000 / 60;
+const DIST = resolve(import.meta.dirname, '../../dist/renderer');
+
+/** A tree to 64 outlets: 127 channels. */
+function treeChip(): string {
+  const mm = 1e6;
+  const making = splitTree.make('tree', {
+    layer: 'flow',
+    levels: 6,
+    box: { left: 5 * mm, right: 120 * mm, bottom: 5 * mm, top: 80 * mm },
+    trunkWidth: 200_000,
+    leafWidth: 100_000,
+    joining: false,
+    portDiameter: 750_000,
+  });
+  if ('refusal' in making) throw new Error(making.refusal);
+  const chip = { ...emptyChip(), name: 'tree', outline: { width: 127_760_000, height: 85_480_000 } };
+  return writeDescription({ ...chip, ...making.made });
+}
+
+/** A snake of channels joined end to end, 250 to a row, from one port to another. */
+function snakeChip(count: number): string {
+  const STEP = 380_000;
+  const PITCH = 400_000;
+  const ROW = 250;
+  const at = (i: number): readonly [number, number] => {
+    const row = Math.floor(i / ROW);
+    const along = i % ROW;
+    return [1_000_000 + (row % 2 === 0 ? along : ROW - 1 - along) * STEP, 1_000_000 + row * PITCH];
+  };
+  const channels = Array.from({ length: count }, (_, i) => ({
+    id: `c${i}`,
+    layer: 'flow',
+    path: [at(i), at(i + 1)] as const,
+    width: [100_000, 100_000] as const,
+    bendRadius: 0,
+  }));
+  const port = (id: string, place: readonly [number, number], drive: object) =>
+    ({ id, at: place, layer: 'flow', diameter: 0, drive, tubing: [] }) as const;
+  const rows = Math.ceil(count / ROW) + 1;
+  const chip = {
+    ...emptyChip(),
+    name: `snake of ${count}`,
+    outline: { width: 2_000_000 + ROW * STEP, height: 2_000_000 + rows * PITCH },
+    channels,
+    ports: [
+      port('in', at(0), { kind: 'flow', flow: 1e-9 / 60 }),
+      port('out', at(count), { kind: 'pressure', pressure: 0 }),
+    ],
+  } as ReturnType<typeof emptyChip>;
+  return writeDescription(chip);
+}
+
+/** Four arms that meet in the middle, to be dragged. */
+function crossChip(): string {
+  const mm = 1e6;
+  const middle = [20 * mm, 10 * mm] as const;
+  const ends = [
+    [5 * mm, 10 * mm],
+    [35 * mm, 10 * mm],
+    [20 * mm, 18 * mm],
+    [20 * mm, 2 * mm],
+  ] as const;
+  const chip = {
+    ...emptyChip(),
+    name: 'cross',
+    outline: { width: 40 * mm, height: 20 * mm },
+    channels: ends.map((end, i) => ({
+      id: `arm ${i + 1}`,
+      layer: 'flow',
+      path: [end, middle],
+      width: [200_000, 200_000],
+      bendRadius: 0,
+    })),
+    ports: ends.map((at, i) => ({
+      id: `p${i + 1}`,
+      at,
+      layer: 'flow',
+      diameter: 0,
+      drive: i === 0 ? { kind: 'flow', flow: 1e-8 / 60 } : { kind: 'pressure', pressure: 0 },
+      tubing: [],
+    })),
+  } as unknown as ReturnType<typeof emptyChip>;
+  return writeDescription(chip);
+}
+
+const sorted = (values: readonly number[]): number[] => [...values].sort((a, b) => a - b);
+const median = (values: readonly number[]): number =>
+  sorted(values)[Math.floor(values.length / 2)] ?? Number.NaN;
+const high = (values: readonly number[]): number =>
+  sorted(values)[Math.min(values.length - 1, Math.floor(0.95 * values.length))] ?? Number.NaN;
+
+async function scriptTime(cdp: CDPSession): Promise<number> {
+  const { metrics } = await cdp.send('Performance.getMetrics');
+  return 1000 * metrics.find(({ name }) => name === 'ScriptDuration')!.value;
+}
+
+/** ms of script per painted frame while something is done in the page. */
+async function perFrame(sitting: Sitting, work: () => Promise<unknown>): Promise<number> {
+  const cdp = await sitting.context.newCDPSession(sitting.page);
+  await cdp.send('Performance.enable');
+  await sitting.page.evaluate(() => {
+    const state = { frames: 0 };
+    Object.assign(window, { counted: state });
+    const tick = (): void => {
+      state.frames += 1;
+      requestAnimationFrame(tick);
+    };
+    requestAnimationFrame(tick);
+  });
+  const before = await scriptTime(cdp);
+  await work();
+  const spent = (await scriptTime(cdp)) - before;
+  const frames = await sitting.page.evaluate(
+    () => (window as unknown as { counted: { frames: number } }).counted.frames,
+  );
+  await cdp.detach();
+  return spent / Math.max(1, frames);
+}
+
+/** ms from a step of a field to the changed words of the five answers, in the page. */
+const stepped = (page: Page, label: string, times: number): Promise<number[]> =>
+  page.evaluate(
+    async ([name, count]) => {
+      const bar = document.querySelector('.verdicts')!;
+      const out: number[] = [];
+      for (let i = 0; i < count; i += 1) {
+        const input = [...document.querySelectorAll<HTMLInputElement>('.card .field input')].find(
+          (element) => element.labels?.[0]?.textContent === name,
+        )!;
+        const began = performance.now();
+        const changed = new Promise<number>((done) => {
+          const watch = new MutationObserver((records) => {
+            // the marking as busy is no answer
+            if (!records.some(({ type }) => type !== 'attributes')) return;
+            watch.disconnect();
+            done(performance.now());
+          });
+          watch.observe(bar, { childList: true, characterData: true, subtree: true });
+          setTimeout(() => done(Number.NaN), 5000);
+        });
+        input.dispatchEvent(new KeyboardEvent('keydown', { key: 'ArrowUp', bubbles: true }));
+        out.push((await changed) - began);
+        // the junctions of the step before are out of the way
+        await new Promise((done) => setTimeout(done, 250));
+      }
+      return out;
+    },
+    [label, times] as const,
+  );
+
+async function answers(folder: string): Promise<BenchRow[]> {
+  const file = join(folder, 'tree.json');
+  writeFileSync(file, treeChip());
+  const sitting = await sit({ files: [file] });
+  const { page } = sitting;
+  try {
+    await answered(page);
+    const rows: BenchRow[] = [];
+    for (const [what, tab, name, label] of [
+      ['a drive', 'Ports', 'tree-in', 'Flow into the chip'],
+      ['a width', 'Channels', 'tree-2-1', 'Width'],
+    ] as const) {
+      await page.getByRole('tab', { name: new RegExp(tab) }).click();
+      await page.getByRole('searchbox').fill(name);
+      await page.getByRole('gridcell', { name, exact: true }).click();
+      await page.getByLabel(label, { exact: true }).focus();
+      await stepped(page, label, 3);
+      const times = (await stepped(page, label, 21)).filter(Number.isFinite);
+      rows.push(
+        {
+          what: `127 channels, ${what} changed: to the new verdict`,
+          median: median(times),
+          unit: 'ms',
+          runs: times.length,
+          target: FRAME,
+        },
+        { what: `  the slowest twentieth`, median: high(times), unit: 'ms', runs: times.length, target: 50 },
+      );
+      await page.getByRole('searchbox').fill('');
+    }
+    rows.push(await memory(sitting, '127 channels, solved'));
+    return rows;
+  } finally {
+    await sitting.end();
+  }
+}
+
+/** MB that the page's process holds: the page, its solving thread and its junction threads. */
+async function memory(sitting: Sitting, what: string): Promise<BenchRow> {
+  const cdp = await sitting.context.browser()!.newBrowserCDPSession();
+  const { processInfo } = await cdp.send('SystemInfo.getProcessInfo');
+  let most = 0;
+  for (const { type, id } of processInfo) {
+    if (type !== 'renderer') continue;
+    try {
+      const pages = Number(readFileSync(`/proc/${id}/statm`, 'utf8').split(' ')[1]);
+      most = Math.max(most, (pages * 4096) / 1e6);
+    } catch {
+      // not told where there is no /proc
+    }
+  }
+  return { what: `memory, ${what}`, median: most, unit: 'MB', runs: 1, target: 400 };
+}
+
+async function dragging(folder: string): Promise<BenchRow[]> {
+  const file = join(folder, 'cross.json');
+  writeFileSync(file, crossChip());
+  const sitting = await sit({ files: [file] });
+  const { page } = sitting;
+  try {
+    await answered(page);
+    const box = (await page.locator('.sheet-surface').first().boundingBox())!;
+    // the junction lies in the middle of the chip, and that 18 px above the middle of the sheet
+    const at = { x: box.x + box.width / 2, y: box.y + box.height / 2 - 18 };
+    await page.mouse.click(at.x - 60, at.y);
+    await page.mouse.move(at.x, at.y);
+    await page.mouse.down();
+    let x = 0;
+    const script = await perFrame(sitting, async () => {
+      for (; x < 90; x += 1) {
+        await page.mouse.move(at.x + x, at.y + x / 3);
+        await page.waitForTimeout(8);
+      }
+    });
+    const follow: number[] = [];
+    const settle: number[] = [];
+    for (let i = 0; i < 9; i += 1) {
+      // one step of the hand, until the preview of the junction there is in the answer
+      const seen = page.evaluate(
+        () =>
+          new Promise<number>((done) => {
+            let began = 0;
+            const start = (): void => {
+              began = performance.now();
+            };
+            addEventListener('pointermove', start, { once: true, capture: true });
+            const bar = document.querySelector('.verdicts')!;
+            const watch = new MutationObserver(() => {
+              if (began === 0 || !bar.textContent?.includes('solved within')) return;
+              watch.disconnect();
+              done(performance.now() - began);
+            });
+            watch.observe(bar, { childList: true, characterData: true, subtree: true });
+            setTimeout(() => done(Number.NaN), 3000);
+          }),
+      );
+      await page.waitForTimeout(40);
+      x += 7;
+      await page.mouse.move(at.x + x, at.y + x / 3);
+      follow.push(await seen);
+    }
+    for (let i = 0; i < 5; i += 1) {
+      const solved = page.evaluate(
+        () =>
+          new Promise<number>((done) => {
+            let began = 0;
+            addEventListener(
+              'pointerup',
+              () => {
+                began = performance.now();
+              },
+              { once: true, capture: true },
+            );
+            const bar = document.querySelector('.verdicts')!;
+            const watch = new MutationObserver(() => {
+              if (began === 0 || bar.getAttribute('aria-busy') !== 'false') return;
+              watch.disconnect();
+              done(performance.now() - began);
+            });
+            watch.observe(bar, { attributes: true, childList: true, characterData: true, subtree: true });
+            setTimeout(() => done(Number.NaN), 5000);
+          }),
+      );
+      await page.waitForTimeout(40);
+      await page.mouse.up();
+      settle.push(await solved);
+      await page.mouse.down();
+      x += 7;
+      await page.mouse.move(at.x + x, at.y + x / 3, { steps: 4 });
+      await page.waitForTimeout(100);
+    }
+    await page.mouse.up();
+    const [followed, settled] = [follow, settle].map((values) => values.filter(Number.isFinite)) as [
+      number[],
+      number[],
+    ];
+    return [
+      {
+        what: 'junction of four arms dragged: script per frame',
+        median: script,
+        unit: 'ms',
+        runs: 90,
+        against: 'a frame',
+        ratio: script / FRAME,
+        target: 1,
+      },
+      {
+        what: '  its preview after the hand',
+        median: median(followed),
+        unit: 'ms',
+        runs: followed.length,
+        against: 'a frame',
+        ratio: median(followed) / FRAME,
+        target: 2,
+      },
+      {
+        what: '  solved after the hand stops',
+        median: median(settled),
+        unit: 'ms',
+        runs: settled.length,
+        target: 100,
+      },
+    ];
+  } finally {
+    await sitting.end();
+  }
+}
+
+async function panning(folder: string, count: number, frames: number): Promise<BenchRow[]> {
+  const file = join(folder, `snake-${count}.json`);
+  writeFileSync(file, snakeChip(count));
+  const sitting = await sit({ files: [file] });
+  const { page } = sitting;
+  try {
+    await answered(page);
+    const box = (await page.locator('.sheet-surface').first().boundingBox())!;
+    await page.mouse.move(box.x + box.width / 2, box.y + box.height / 2);
+    const script = await perFrame(sitting, async () => {
+      for (let i = 0; i < 80; i += 1) {
+        await page.mouse.wheel(i % 8 < 4 ? 12 : -12, i < 40 ? -30 : 30);
+        await page.waitForTimeout(8);
+      }
+    });
+    return [
+      {
+        what: `${count} channels, panned and zoomed: script per frame`,
+        median: script,
+        unit: 'ms',
+        runs: 80,
+        against: 'a frame of 60 a second',
+        ratio: script / FRAME,
+        target: 60 / frames,
+      },
+      await memory(sitting, `${count} channels`),
+    ];
+  } finally {
+    await sitting.end();
+  }
+}
+
+async function starting(folder: string): Promise<BenchRow[]> {
+  const file = join(folder, 'snake-1000.json');
+  writeFileSync(file, snakeChip(1000));
+  const times: number[] = [];
+  for (let i = 0; i < 3; i += 1) {
+    const sitting = await sit({ files: [file] });
+    times.push(
+      await sitting.page.evaluate(
+        () =>
+          new Promise<number>((done) => {
+            const usable = (): void => {
+              if (document.querySelector('.sheet canvas') && document.querySelector('.grid-row'))
+                done(performance.now());
+              else requestAnimationFrame(usable);
+            };
+            usable();
+          }),
+      ),
+    );
+    await sitting.end();
+  }
+  const html = readFileSync(join(DIST, 'index.html'), 'utf8');
+  const files = [...html.matchAll(/(?:src|href)="\.\/(assets\/[^"]+\.js)"/g)].map((found) => found[1]!);
+  const bytes = files.reduce((sum, name) => sum + gzipSync(readFileSync(join(DIST, name))).length, 0);
+  return [
+    {
+      what: 'start of the page to usable, 1000 channels',
+      median: median(times),
+      unit: 'ms',
+      runs: times.length,
+      target: 1500,
+      note: 'from navigation, as the page counts; at most, because the look comes after loading',
+    },
+    { what: 'entry of the page, gzipped', median: bytes / 1e3, unit: 'kB', runs: 1, target: 600 },
+  ];
+}
+
+/** By name, so that one can be run alone. */
+export const PARTS: Readonly<Record<string, (folder: string) => Promise<BenchRow[]>>> = {
+  answers,
+  dragging,
+  'pan 5000': (folder) => panning(folder, 5000, 60),
+  'pan 50000': (folder) => panning(folder, 50_000, 30),
+  starting,
+};
+
+export default async function page(): Promise<BenchRow[]> {
+  const folder = mkdtempSync(join(tmpdir(), 'channelwright-bench-'));
+  const rows: BenchRow[] = [];
+  try {
+    for (const part of Object.values(PARTS)) rows.push(...(await part(folder)));
+    return rows;
+  } finally {
+    rmSync(folder, { recursive: true, force: true });
+  }
+}
