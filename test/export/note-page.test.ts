@@ -108,4 +108,4 @@ test('the note, the flow split and a mask by keyboard; light and dark; the numbe
   } finally {
     await sitting.end();
   }
-});
+}, 240_000);

@@ -348,12 +348,12 @@ export function routesTable(result: Result): Table {
       ...(cell
         ? [
             figures(
-              'cell at the wall, time',
+              'time at the wall',
               'time',
               routes.map(({ wallHugging }) => wallHugging?.residenceTime ?? null),
             ),
             figures(
-              'its peak',
+              'peak there',
               'stress',
               routes.map(({ wallHugging }) => wallHugging?.peakShear ?? null),
             ),
@@ -361,7 +361,7 @@ export function routesTable(result: Result): Table {
         : []),
     ],
     ...(cell && {
-      foot: 'A cell at the wall is a ball of the diameter that the limits name, rolling along the wall.',
+      foot: 'At the wall: of a ball of the diameter that the limits name, rolling along it.',
     }),
   };
 }
