@@ -1,14 +1,16 @@
-import { PALETTES, type Palette, type Scheme } from './tokens.ts';
+import { FORCED, PALETTES, type Palette, type Scheme } from './tokens.ts';
 
 /** What the person chose: the system's own light or dark, or one of them always. */
 export type SchemeChoice = 'system' | Scheme;
 
 const dark = typeof matchMedia === 'function' ? matchMedia('(prefers-color-scheme: dark)') : null;
+/** Colours that the person's system imposes on every page. */
+const forced = typeof matchMedia === 'function' ? matchMedia('(forced-colors: active)') : null;
 let choice: SchemeChoice = 'system';
 const listeners = new Set<() => void>();
 
 export const scheme = (): Scheme => (choice === 'system' ? (dark?.matches ? 'dark' : 'light') : choice);
-export const palette = (): Palette => PALETTES[scheme()];
+export const palette = (): Palette => (forced?.matches ? FORCED : PALETTES[scheme()]);
 
 function apply(): void {
   const root = document.documentElement;
@@ -20,6 +22,7 @@ function apply(): void {
 /** Puts the palette on the page and keeps it in step with the system. */
 export function startTheme(): void {
   dark?.addEventListener('change', apply);
+  forced?.addEventListener('change', apply);
   apply();
 }
 

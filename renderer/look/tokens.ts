@@ -46,6 +46,19 @@ export const PALETTES: Readonly<Record<Scheme, Palette>> = {
   },
 };
 
+/** Where the system imposes its colours, the canvas takes them too; what is missed is still said in words. */
+export const FORCED: Palette = {
+  ground: 'Canvas',
+  sheet: 'Canvas',
+  chip: 'Canvas',
+  card: 'Canvas',
+  field: 'Canvas',
+  line: 'GrayText',
+  ink: 'CanvasText',
+  soft: 'CanvasText',
+  alarm: 'LinkText',
+};
+
 /** Sizes in CSS px, by use. */
 export const SIZES = { note: 10.5, label: 12, body: 13, verdict: 15, title: 17, head: 20 } as const;
 

@@ -41,7 +41,7 @@ export interface Shown {
 
 const SAYS: Readonly<Record<Overlay, string>> = {
   share: 'share of the flow that enters the chip',
-  speed: 'mean speed of the flow',
+  speed: 'mean speed of the flow, marks in its direction',
   pressure: 'pressure, over each channel',
   'wall shear': 'peak wall shear in each channel and junction',
   time: 'time a liquid stays in each channel',

@@ -7,7 +7,7 @@ import type { Size } from './camera.ts';
 export type Paint = (ctx: CanvasRenderingContext2D) => void;
 
 /** Sheets of paint one over the other, each one shape that draws all it has. */
-export const SHEETS = ['chip', 'marks', 'hand'] as const;
+export const SHEETS = ['chip', 'flow', 'marks', 'hand'] as const;
 export type SheetName = (typeof SHEETS)[number];
 
 /** The canvas behind the sheet: konva keeps it sharp and drawn once a frame, nothing more. */

@@ -1,6 +1,8 @@
 import type { Chip } from '../../solver/chip/chip.ts';
+import { drawUnderlay, underlayOf } from '../bring-in/underlay.ts';
 import { boxOfParts, findPart } from '../edits/parts.ts';
 import type { Xy } from '../geometry/vector.ts';
+import { motionAllowed, onMotion } from '../look/motion.ts';
 import { onTheme, palette, scheme } from '../look/theme.ts';
 import type { Desk } from '../state/desk.ts';
 import { shownAnswer } from '../state/live.ts';
@@ -10,6 +12,7 @@ import { toScreen } from './camera.ts';
 import { CellArt } from './cell-art.ts';
 import { drawChannelWords } from './channel-words.ts';
 import { drawEdge, drawScaleBar, takeEdge } from './edge.ts';
+import { type Directions, directionsOf, drawFlowMarks } from './flow-marks.ts';
 import { paintHand } from './hand-paint.ts';
 import { drawPlaceWords, drawPorts, drawPortWords } from './marks.ts';
 import { type Shown, shown } from './overlay.ts';
@@ -29,6 +32,7 @@ interface Derived {
   readonly live: boolean;
   readonly shown: Shown;
   readonly bodies: Bodies;
+  readonly directions: Directions;
   readonly ports: readonly PortWords[];
   readonly places: readonly PlaceWords[];
 }
@@ -61,6 +65,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       live: live !== null,
       shown: coloured,
       bodies: new Bodies(scene, shadesOf(scene, coloured)),
+      directions: overlay === 'speed' ? directionsOf(solved.result) : new Map(),
       ports: portWords(chip, solved.result),
       places: placeWords(chip, solved.result, (where) => {
         // a junction is marked where it is worst
@@ -90,12 +95,19 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         ctx.fillStyle = look.sheet;
         ctx.fillRect(0, 0, size.width, size.height);
         drawEdge(ctx, d.chip, camera, size, look);
+        drawUnderlay(ctx, desk, camera, size);
         d.bodies.draw(ctx, camera, size, d.spatial, {
           scheme: scheme(),
           palette: look,
           ramp: d.shown.ramp,
         });
         art.draw(ctx, d.shown, camera, size, look);
+      })(),
+    flow: (ctx) =>
+      frame((d, { camera, size }) => {
+        if (d.shown.overlay !== 'speed') return;
+        const seconds = motionAllowed() ? performance.now() / 1000 : null;
+        drawFlowMarks(ctx, d.scene, d.shown, d.directions, camera, size, palette(), d.spatial, seconds);
       })(),
     marks: (ctx) =>
       frame((d, { camera, size }) => {
@@ -125,17 +137,41 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       const before = seen;
       seen = view;
       if (view.size !== before.size) painter.resize(view.size);
-      if (view.camera !== before.camera) painter.redraw('chip', 'marks', 'hand');
+      if (view.camera !== before.camera) painter.redraw('chip', 'flow', 'marks', 'hand');
       else if (view.overlay !== before.overlay || view.streamlines !== before.streamlines)
-        painter.redraw('chip', 'marks');
+        painter.redraw('chip', 'flow', 'marks');
       if (view.selection !== before.selection || view.tool !== before.tool) painter.redraw('hand');
     }),
-    desk.project.subscribe(() => painter.redraw('chip', 'marks', 'hand')),
-    desk.solver.solved.subscribe(() => painter.redraw('chip', 'marks')),
-    desk.solver.live.subscribe(() => painter.redraw('chip', 'marks', 'hand')),
+    underlayOf(desk).subscribe(() => painter.redraw('chip')),
+    desk.project.subscribe(() => painter.redraw('chip', 'flow', 'marks', 'hand')),
+    desk.solver.solved.subscribe(() => painter.redraw('chip', 'flow', 'marks')),
+    desk.solver.live.subscribe(() => painter.redraw('chip', 'flow', 'marks', 'hand')),
     bench.hand.subscribe(() => painter.redraw('hand')),
-    onTheme(() => painter.redraw('chip', 'marks', 'hand')),
+    onTheme(() => painter.redraw('chip', 'flow', 'marks', 'hand')),
   ];
+  // the marks of the flow move while speed is shown, thirty times a second, and only where motion is allowed
+  let even = false;
+  let ticking = 0;
+  const tick = (): void => {
+    ticking = 0;
+    even = !even;
+    if (even) painter.redraw('flow');
+    start();
+  };
+  const start = (): void => {
+    const moves = desk.view.get().overlay === 'speed' && desk.solver.solved.get().result && motionAllowed();
+    if (moves && ticking === 0) ticking = requestAnimationFrame(tick);
+  };
+  start();
+  stops.push(
+    desk.view.subscribe(start),
+    desk.solver.solved.subscribe(start),
+    onMotion(() => {
+      painter.redraw('flow');
+      start();
+    }),
+    () => cancelAnimationFrame(ticking),
+  );
   const fonts = (): void => painter.redraw('marks', 'chip');
   document.fonts.addEventListener('loadingdone', fonts);
   painter.drawNow();
