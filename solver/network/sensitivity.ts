@@ -75,30 +75,68 @@ export function gradients(
     for (let e = 0; e < byResistance.length; e += 1) {
       byResistance[e] = (weight[from[e]] - weight[to[e]]) * solution.ductFlow[e];
     }
-    const byBlock = Float64Array.from(spec.blocks, (_, b) => {
-      let [ours, theirs] = [0, 0];
-      for (let e = edges.blockStart[b]; e < edges.blockStart[b + 1]; e += 1) {
-        const drop = solution.pressure[from[e]] - solution.pressure[to[e]];
-        ours += conductance[e] * (weight[from[e]] - weight[to[e]]) ** 2;
-        theirs += conductance[e] * drop ** 2;
-      }
-      return Math.sqrt(Math.max(0, ours)) * Math.sqrt(Math.max(0, theirs));
-    });
-    const supplied = new Float64Array(edges.nodes);
-    for (let e = 0; e < from.length; e += 1) {
-      const q = conductance[e] * (weight[from[e]] - weight[to[e]]);
-      supplied[from[e]] -= q;
-      supplied[to[e]] += q;
-    }
-    if (of === 'duct') {
-      byResistance[index] -= solution.ductFlow[index];
-      supplied[from[index]] += conductance[index];
-      supplied[to[index]] -= conductance[index];
-    }
-    const byDrive = Float64Array.from(spec.drives, ({ kind, node }, d) =>
-      kind === 'flow' ? weight[node] : supplied[driveNode[d]],
-    );
-    if (of === 'drive' && spec.drives[index].kind === 'flow') byDrive[index] = 1;
-    return { weight, byResistance, byBlock, byDrive };
+    // most who ask need neither of these, and they cost more than the rest
+    const byBlock = once(() => blockGradient(spec, network, solution, weight));
+    const byDrive = once(() => driveGradient(spec, network, targets[t], weight));
+    if (of === 'duct') byResistance[index] -= solution.ductFlow[index];
+    return {
+      weight,
+      byResistance,
+      get byBlock() {
+        return byBlock();
+      },
+      get byDrive() {
+        return byDrive();
+      },
+    };
   });
+}
+
+function once<T>(make: () => T): () => T {
+  let made: T | undefined;
+  return () => {
+    made ??= make();
+    return made;
+  };
+}
+
+function blockGradient(
+  spec: NetworkSpec,
+  { edges, conductance }: PreparedNetwork,
+  { pressure }: NetworkSolution,
+  weight: Float64Array,
+): Float64Array {
+  const { from, to } = edges;
+  return Float64Array.from(spec.blocks, (_, b) => {
+    let [ours, theirs] = [0, 0];
+    for (let e = edges.blockStart[b]; e < edges.blockStart[b + 1]; e += 1) {
+      ours += conductance[e] * (weight[from[e]] - weight[to[e]]) ** 2;
+      theirs += conductance[e] * (pressure[from[e]] - pressure[to[e]]) ** 2;
+    }
+    return Math.sqrt(Math.max(0, ours)) * Math.sqrt(Math.max(0, theirs));
+  });
+}
+
+function driveGradient(
+  spec: NetworkSpec,
+  { edges, conductance }: PreparedNetwork,
+  { of, index }: Target,
+  weight: Float64Array,
+): Float64Array {
+  const { from, to, driveNode } = edges;
+  const supplied = new Float64Array(edges.nodes);
+  for (let e = 0; e < from.length; e += 1) {
+    const q = conductance[e] * (weight[from[e]] - weight[to[e]]);
+    supplied[from[e]] -= q;
+    supplied[to[e]] += q;
+  }
+  if (of === 'duct') {
+    supplied[from[index]] += conductance[index];
+    supplied[to[index]] -= conductance[index];
+  }
+  const byDrive = Float64Array.from(spec.drives, ({ kind, node }, d) =>
+    kind === 'flow' ? weight[node] : supplied[driveNode[d]],
+  );
+  if (of === 'drive' && spec.drives[index].kind === 'flow') byDrive[index] = 1;
+  return byDrive;
 }

@@ -56,7 +56,9 @@ export function bandsOf(
       ] as const)
         for (let k = 0; k < sum.length; k += 1) sum[k] += own[k] / entering;
   });
-  const powers = blockPowers(lumped, (node) => flow.pressure[node]);
+  const powers = blockPowers(lumped, flow.pressure, new Float64Array(lumped.spec.blocks.length));
+  const mixed = new Float64Array(whole.weight.length);
+  const adjoint = new Float64Array(blocks.length);
   const own = ports.map((): NonNullable<PortResult['band']> | null => null);
   found.forEach(({ byResistance, weight }, i) => {
     const { port, q } = drives[i];
@@ -66,7 +68,9 @@ export function bandsOf(
         off += ducts[e] * Math.abs(byResistance[e] / q - less * whole.byResistance[e]);
       }
       // Where a cell's matrix A is off by no more than a share of its energy, |λ·δA·p| ≤ share √(λ·A·λ) √(p·A·p).
-      const adjoint = blockPowers(lumped, (node) => weight[node] / q - less * whole.weight[node]);
+      for (let node = 0; node < mixed.length; node += 1)
+        mixed[node] = weight[node] / q - less * whole.weight[node];
+      blockPowers(lumped, mixed, adjoint);
       for (let b = 0; b < blocks.length; b += 1) off += blocks[b] * Math.sqrt(adjoint[b] * powers[b]);
       return told(off);
     };
@@ -92,15 +96,22 @@ export function bandsOf(
   };
 }
 
-/** x·A·x of every block, by the values of x at its nodes. */
-function blockPowers({ spec }: Lumped, x: (node: number) => number): Float64Array {
-  return Float64Array.from(spec.blocks, ({ nodes, matrix }) => {
+/** x·A·x of every block, by the values of x at its nodes, into `into`. */
+function blockPowers({ spec }: Lumped, x: Float64Array, into: Float64Array): Float64Array {
+  for (let b = 0; b < into.length; b += 1) {
+    const { nodes, matrix } = spec.blocks[b];
     const n = nodes.length;
     let sum = 0;
-    for (let i = 0; i < n; i += 1)
-      for (let j = 0; j < i; j += 1) sum -= matrix[i * n + j] * (x(nodes[i]) - x(nodes[j])) ** 2;
-    return Math.max(0, sum);
-  });
+    for (let i = 0; i < n; i += 1) {
+      const at = x[nodes[i]];
+      for (let j = 0; j < i; j += 1) {
+        const drop = at - x[nodes[j]];
+        sum -= matrix[i * n + j] * drop * drop;
+      }
+    }
+    into[b] = Math.max(0, sum);
+  }
+  return into;
 }
 
 /** Error of the power that drives the flow: of the pressure, where one flow is given. */
