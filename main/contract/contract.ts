@@ -2,6 +2,7 @@ import { z } from 'zod';
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { ChipEdit } from '../../solver/chip/edit.ts';
 import type { Result } from '../../solver/chip/result.ts';
+import { bringInPicture, bringInReport, bringInSettings, bringInState, drawingSummary } from './bring-in.ts';
 import { MASK_FORMATS, maskOptions, maskReport, maskState } from './mask.ts';
 import { noteState, noteWish } from './note.ts';
 
@@ -345,6 +346,28 @@ export const REQUESTS = {
     input: z.strictObject({ seq, result }),
     output: z.object({ tabbed: z.string(), rows: z.number() }),
   },
+
+  /**
+   * Begins to read a drawing (DXF, SVG, GDSII) in a thread of its own; the event `bringIn` tells how it goes on,
+   * `bringIn.take` hands over the outcome once (of a failed job it refuses with the problem). Without settings
+   * only what the file holds is told; with them, what chip it makes.
+   */
+  'bringIn.start': {
+    input: z.strictObject({
+      file: z.union([z.strictObject({ path }), z.strictObject({ name, bytes })]),
+      settings: bringInSettings.nullable(),
+    }),
+    output: z.object({ job: z.int().positive() }),
+  },
+  'bringIn.take': {
+    input: z.strictObject({ job: z.int().positive() }),
+    output: z.object({
+      summary: drawingSummary.nullable(),
+      outcome: z.object({ chip, report: bringInReport, picture: bringInPicture }).nullable(),
+    }),
+  },
+  /** Ends a job; nothing comes of it. */
+  'bringIn.cancel': { input: z.strictObject({ job: z.int().positive() }), output: nothing },
 } as const;
 
 /** What a host sends unasked, to one window. */
@@ -359,6 +382,8 @@ export const EVENTS = {
   problem: z.object({ kind: z.string(), what: z.string(), where: z.string(), remedy: z.string() }),
   /** How a mask job stands; sent at every step and once at its end. */
   mask: maskState,
+  /** How a drawing that comes in stands; sent at every step and once at its end. */
+  bringIn: bringInState,
   /** How a note job ended. */
   note: noteState,
   /** The host is about to stop; everything is kept. */

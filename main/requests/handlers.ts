@@ -2,6 +2,7 @@ import type { z } from 'zod';
 import type { REQUESTS, RequestName } from '../contract/contract.ts';
 import type { Session } from '../session/session.ts';
 import { aboutRequests } from './about.ts';
+import { bringInRequests } from './bring-in.ts';
 import { fileRequests } from './files.ts';
 import { keptRequests } from './kept.ts';
 import { maskRequests } from './masks.ts';
@@ -21,6 +22,7 @@ export type Handlers<N extends RequestName> = { readonly [K in N]: Handler<K> };
 /** Every request of the contract that a window's thread answers; `files.choose` is the host's own. */
 export const HANDLERS: Handlers<Exclude<RequestName, 'files.choose'>> = {
   ...aboutRequests,
+  ...bringInRequests,
   ...fileRequests,
   ...keptRequests,
   ...maskRequests,

@@ -1,5 +1,6 @@
 import { useEffect, useRef } from 'react';
 import { AsBuiltPanel } from '../as-built/as-built-panel.tsx';
+import { BringInPanel } from '../bring-in/bring-in-panel.tsx';
 import { findPart } from '../edits/parts.ts';
 import { HandOverPanel } from '../handover/hand-over-panel.tsx';
 import { usePage } from '../page/context.tsx';
@@ -25,6 +26,7 @@ const TITLES: Readonly<Record<Exclude<Panel, 'card'>, string>> = {
   trials: 'Trials',
   'as built': 'As built',
   'hand over': 'Hand over',
+  'bring in': 'Bring in a drawing',
   history: 'What was done',
   keys: 'Keys and units',
   about: 'About',
@@ -79,6 +81,8 @@ function PanelBody({ panel }: { readonly panel: Exclude<Panel, 'card'> }) {
       return <AsBuiltPanel />;
     case 'hand over':
       return <HandOverPanel />;
+    case 'bring in':
+      return <BringInPanel />;
     case 'history':
       return <HistoryPanel />;
     case 'keys':

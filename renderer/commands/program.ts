@@ -62,6 +62,15 @@ export function programCommands(desk: Desk): Command[] {
       run: () => desk.view.patch({ panel: 'hand over' }),
     },
     {
+      id: 'bring in',
+      title: 'Bring in a drawing',
+      keys: [],
+      help: 'Make channels of a DXF, SVG or GDSII drawing, or lay a picture under the sheet to trace.',
+      group: 'Chip',
+      why: open,
+      run: () => desk.view.patch({ panel: 'bring in' }),
+    },
+    {
       id: 'file',
       title: 'Open another',
       keys: ['Ctrl+o'],

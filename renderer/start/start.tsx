@@ -1,5 +1,6 @@
 import { useEffect, useRef, useState } from 'react';
 import type { Output } from '../../main/contract/contract.ts';
+import { isDrawing, showDropped } from '../bring-in/dropped.ts';
 import { QuantityField } from '../card/quantity-field.tsx';
 import { ChoiceField } from '../card/text-field.tsx';
 import { choosePlace } from '../commands/files.ts';
@@ -162,6 +163,15 @@ function NewChip() {
 /** A dropped or picked file: a project by its bytes, anything else as a description. */
 export async function openDropped(desk: ReturnType<typeof usePage>['desk'], file: File): Promise<void> {
   const name = file.name.slice(0, 200) || 'a file';
+  if (isDrawing(name)) {
+    if (!desk.chip()) {
+      // A drawing needs a chip to come into; its own size is taken once it is put on the sheet.
+      const blank = newChip(name.replace(/\.\w+$/, ''), 76_000_000, 26_000_000, 50_000);
+      await desk.open(`Opening ${name} …`, () => desk.client.call('project.new', { chip: blank }));
+    }
+    if (desk.chip()) showDropped(desk, file);
+    return;
+  }
   await desk.open(`Opening ${name} …`, async () => {
     const bytes = new Uint8Array(await file.arrayBuffer());
     if (/\.chw$/i.test(name)) return desk.client.call('project.upload', { name, bytes });
@@ -211,7 +221,7 @@ function Files() {
         <input
           ref={picker}
           type="file"
-          accept=".chw,.json"
+          accept=".chw,.json,.dxf,.svg,.gds"
           aria-label="A file to take a copy of"
           className="aside"
           tabIndex={-1}

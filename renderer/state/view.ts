@@ -15,6 +15,7 @@ export type Panel =
   | 'trials'
   | 'as built'
   | 'hand over'
+  | 'bring in'
   | 'history'
   | 'keys'
   | 'about';
