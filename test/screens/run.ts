@@ -88,6 +88,12 @@ const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
     await page.getByRole('button', { name: 'Compare with the drawing' }).click();
     await page.getByRole('region', { name: 'Drawn and made' }).waitFor({ timeout: 120_000 });
   },
+  'hand over': async (page) => {
+    await demo(page, /Eight-way/);
+    await answered(page);
+    await press(page, 'e');
+    await page.getByRole('button', { name: 'Write the note' }).waitFor();
+  },
   plots: async (page) => {
     await demo(page, /Cell loading/);
     await answered(page);
@@ -112,7 +118,7 @@ for (const [state, go] of Object.entries(STATES)) {
       await sitting.page.setViewportSize(look);
       await sitting.page.emulateMedia({ colorScheme: look.scheme });
       await sitting.page.waitForTimeout(400);
-      await sitting.page.screenshot({ path: join(FOLDER, `${state}-${look.name}.png`) });
+      await sitting.page.screenshot({ path: join(FOLDER, `${state.replaceAll(" ", "-")}-${look.name}.png`) });
     }
     console.log(`${state}: four pictures`);
   } finally {
