@@ -70,6 +70,10 @@ export interface CellSolution {
    * viscosity mu and a unit of u metres multiply by u^3 / mu.
    */
   readonly portMatrix: Float64Array;
+  /** The same to the rims of holes, which is what the fields hold; the same array where there is no hole. */
+  readonly inner: Float64Array;
+  /** Resistance of the turn into a hole at each face, per viscosity (1 / m^3 for a shape in metres), else 0. */
+  readonly holes: Float64Array;
   /** Bound of the relative error of p Y p for any face pressures p. */
   readonly flowError: number;
   /** Bound of the relative error of a peak; null where the cell has none. */

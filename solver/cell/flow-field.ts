@@ -2,6 +2,7 @@ import type { Mesh } from '../mesh/mesh.ts';
 import type { Placement } from './canonical.ts';
 import type { CellFields, CellSolution } from './cell.ts';
 import { type DepthModes, standardModes } from './depth.ts';
+import { rimPressures } from './rim.ts';
 
 /**
  * Velocity, pressure and wall shear in a cell for one set of face pressures: per mode of the depth,
@@ -72,14 +73,15 @@ export function mixFields(fields: CellFields, pressures: ArrayLike<number>): Omi
   };
 }
 
-/** @param pressures on the caller's faces @param placement of a symmetric shape's several, default the first */
+/** @param pressures on the caller's faces, beyond holes @param placement of a symmetric shape's several, default the first */
 export function flowField(
   solution: CellSolution,
   pressures: ArrayLike<number>,
   placement: Placement = solution.placements[0],
 ): FlowField | null {
   if (!solution.fields) return null;
-  const turned = Float64Array.from(placement.face, (face) => pressures[face]);
+  const rims = rimPressures(solution, pressures);
+  const turned = Float64Array.from(placement.face, (face) => rims[face]);
   return { ...mixFields(solution.fields, turned), placement };
 }
 

@@ -2,6 +2,7 @@ import { toCaller } from './canonical.ts';
 import type { CellFields, CellSolution } from './cell.ts';
 import { depthValues, standardModes } from './depth.ts';
 import { HALF } from './flow-field.ts';
+import { rimPressures } from './rim.ts';
 
 /** The largest wall shear in a cell. */
 export interface PeakShear {
@@ -27,11 +28,12 @@ const LEVELS = 16;
 export function peakShear(solution: CellSolution, pressures: ArrayLike<number>): PeakShear | null {
   const { fields, peakError } = solution;
   if (solution.sharp || peakError === null || !fields) return null;
+  const rims = rimPressures(solution, pressures);
   let best: PeakShear | null = null;
   for (const placement of solution.placements) {
     const found = largestWallShear(
       fields,
-      Float64Array.from(placement.face, (face) => pressures[face]),
+      Float64Array.from(placement.face, (face) => rims[face]),
     );
     if (best && found.value <= best.value) continue;
     best = {

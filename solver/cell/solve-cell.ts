@@ -2,7 +2,7 @@ import { canonical } from './canonical.ts';
 import { type Accuracy, type CellSolution, DEFAULT_ACCURACY, type ShapeSolution } from './cell.ts';
 import { checkCell } from './check-cell.ts';
 import { equivalent } from './equivalent.ts';
-import { rimError } from './rim.ts';
+import { holeResistances, inSeries, seriesError } from './rim.ts';
 import type { CellShape } from './shape.ts';
 import { solveShape } from './solve-shape.ts';
 import { type CellStore, serves } from './store.ts';
@@ -32,18 +32,22 @@ export function solveCell(
   const { placements } = copy;
   const { faces } = shape;
   // A symmetric shape's result is the mean over its symmetries, so that copies agree whichever is met first.
-  const portMatrix = new Float64Array(faces * faces);
+  const inner = new Float64Array(faces * faces);
   for (const { face, scale } of placements) {
     const factor = scale ** 3 / placements.length;
     for (let i = 0; i < faces; i += 1)
       for (let j = 0; j < faces; j += 1)
-        portMatrix[face[i] * faces + face[j]] += factor * solved.portMatrix[i * faces + j];
+        inner[face[i] * faces + face[j]] += factor * solved.portMatrix[i * faces + j];
   }
+  const holes = holeResistances(shape);
+  const portMatrix = holes.some((r) => r > 0) ? inSeries(inner, holes) : inner;
   return {
     faces,
     key,
     portMatrix,
-    flowError: solved.flowError + profileError + rimError(shape, portMatrix),
+    inner,
+    holes,
+    flowError: solved.flowError + profileError + seriesError(portMatrix, holes),
     // The rectangle that stands in has other side walls: its peaks say nothing.
     peakError: profileError > 0 ? null : solved.peakError,
     profileError,

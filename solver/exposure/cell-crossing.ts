@@ -90,7 +90,7 @@ function patternOf(solution: CellSolution, fields: CellFields, { key, flow }: Ce
     const matrix = new Float64Array(n * n);
     for (let i = 0; i < n; i += 1) {
       for (let j = 0; j < n; j += 1) {
-        matrix[i * n + j] = solution.portMatrix[face[i] * n + face[j]] / scale ** 3;
+        matrix[i * n + j] = solution.inner[face[i] * n + face[j]] / scale ** 3;
       }
     }
     found = new Pattern(fields, pressuresOf(matrix, n, flow), flow);

@@ -8,6 +8,8 @@ import { patternOfElements } from '../../solver/sparse/pattern.ts';
  *
  * @param layers heights from half depth (0), a plane of symmetry, to the wall (1); or from floor (-1) to lid (1)
  * @param move shifts a plan point at a height, for sloped walls; tags stay those of the plan
+ * @param bore layers from this one on stand over the part of the plan that it keeps, and open upwards
+ *   into the last face
  */
 export function tetraPortMatrix(
   plan: Mesh,
@@ -15,6 +17,7 @@ export function tetraPortMatrix(
   halfDepth: number,
   layers: readonly number[],
   move: (x: number, y: number, s: number) => readonly [number, number] = (x, y) => [x, y],
+  bore?: { readonly from: number; readonly keeps: (x: number, y: number) => boolean },
 ): Float64Array {
   const { vertexCount: base } = plan;
   const levels = layers.length;
@@ -34,7 +37,12 @@ export function tetraPortMatrix(
     const [a, b, c] = [plan.triangles[t]!, plan.triangles[t + 1]!, plan.triangles[t + 2]!].sort(
       (p, q) => p - q,
     ) as [number, number, number];
+    const inBore = bore?.keeps(
+      (plan.x[a]! + plan.x[b]! + plan.x[c]!) / 3,
+      (plan.y[a]! + plan.y[b]! + plan.y[c]!) / 3,
+    );
     for (let l = 0; l + 1 < levels; l += 1) {
+      if (bore && l >= bore.from && !inBore) continue;
       const up = base * (l + 1);
       const low = base * l;
       tets.push(
@@ -44,16 +52,11 @@ export function tetraPortMatrix(
       );
     }
   }
-  const wallEdges = new Set<number>();
   const faceEdges = new Map<number, number>();
-  const wallCorner = new Uint8Array(base);
   const pair = (a: number, b: number): number => Math.min(a, b) * base + Math.max(a, b);
   for (let e = 0; e < plan.boundaryTag.length; e += 1) {
     const [a, b] = [plan.boundary[3 * e]!, plan.boundary[3 * e + 1]!];
-    if (plan.boundaryTag[e] === 0) {
-      wallEdges.add(pair(a, b));
-      wallCorner[a] = wallCorner[b] = 1;
-    } else faceEdges.set(pair(a, b), plan.boundaryTag[e]!);
+    if (plan.boundaryTag[e] !== 0) faceEdges.set(pair(a, b), plan.boundaryTag[e]!);
   }
 
   // Nodes: vertices, then the middles of edges.
@@ -71,20 +74,45 @@ export function tetraPortMatrix(
   };
   const nodes = tets.map((v) => [...v, ...EDGES.map(([i, j]) => mid(v[i], v[j]))]);
   const nodeCount = vertices + ends.length;
+  /** Sides that one tetrahedron alone has: face (its number), plane of symmetry (-1) or wall (0). */
+  const outside = new Map<string, readonly [number, number, number]>();
+  for (const v of tets)
+    for (const [i, j, k] of SIDES) {
+      const side = [v[i], v[j], v[k]] as const;
+      const name = [...side].sort((p, q) => p - q).join(' ');
+      if (!outside.delete(name)) outside.set(name, side);
+    }
+  const kindOf = (side: readonly [number, number, number]): number => {
+    const plans = [...new Set(side.map((v) => v % base))];
+    if (plans.length === 2) return faceEdges.get(pair(plans[0]!, plans[1]!)) ?? 0;
+    const level = Math.floor(side[0] / base);
+    if (bore && level === levels - 1) return faces;
+    return level === 0 && !whole ? -1 : 0;
+  };
+  const held = new Uint8Array(nodeCount);
+  const level = new Uint8Array(nodeCount);
+  for (const side of outside.values()) {
+    const kind = kindOf(side);
+    if (kind > 0) continue;
+    const [a, b, c] = side;
+    for (const node of [a, b, c, mid(a, b), mid(b, c), mid(a, c)]) {
+      if (kind === 0) held[node] = 1;
+      else level[node] = 1;
+    }
+  }
+  const used = new Uint8Array(nodeCount);
+  for (const n of nodes) for (const node of n) used[node] = 1;
   const unknown = [0, 1, 2].map(() => new Int32Array(nodeCount));
   let count = 0;
   for (let i = 0; i < nodeCount; i += 1) {
-    const [a, b] = i < vertices ? [i, i] : ends[i - vertices]!;
-    const [pa, pb] = [a % base, b % base];
-    const side = pa === pb ? wallCorner[pa] === 1 : wallEdges.has(pair(pa, pb));
-    const lid = a >= base * (levels - 1) && b >= base * (levels - 1);
-    const lowest = a < base && b < base;
     unknown.forEach((part, d) => {
-      part[i] = side || lid || (lowest && (whole || d === 2)) ? -1 : count++;
+      part[i] = !used[i] || held[i] || (level[i] && d === 2) ? -1 : count++;
     });
   }
   const pressureStart = count;
-  const total = count + vertices;
+  const pressure = new Int32Array(vertices).fill(-1);
+  for (const v of tets) for (const i of v) if (pressure[i]! < 0) pressure[i] = count++;
+  const total = count;
 
   const start = new Int32Array(tets.length + 1);
   const list = new Int32Array(34 * tets.length);
@@ -94,7 +122,7 @@ export function tetraPortMatrix(
       n.forEach((node, i) => {
         list[34 * t + 10 * d + i] = unknown[d]![node]!;
       });
-    for (let i = 0; i < 4; i += 1) list[34 * t + 30 + i] = pressureStart + n[i]!;
+    for (let i = 0; i < 4; i += 1) list[34 * t + 30 + i] = pressure[n[i]!]!;
   });
   const { matrix, scatter, scatterStart } = patternOfElements(total, start, list);
   const loads = Array.from({ length: faces }, () => new Float64Array(total));
@@ -127,24 +155,31 @@ export function tetraPortMatrix(
     for (let q = 0; q < 4; q += 1)
       for (let r = 0; r <= q; r += 1)
         matrix.value[at(t, 30 + q, 30 + r)]! -= (EPSILON * volume * (q === r ? 2 : 1)) / 20;
-    for (const [i, j, k] of SIDES) {
-      const plans = [...new Set([v[i] % base, v[j] % base, v[k] % base])];
-      const tag = plans.length === 2 ? faceEdges.get(pair(plans[0]!, plans[1]!)) : undefined;
-      if (tag === undefined) continue;
-      const [a, b, c] = [v[i], v[j], v[k]];
-      const e1 = [vx(b) - vx(a), vy(b) - vy(a), vz(b) - vz(a)] as const;
-      const e2 = [vx(c) - vx(a), vy(c) - vy(a), vz(c) - vz(a)] as const;
-      let normal = [(e1[1] * e2[2] - e1[2] * e2[1]) / 2, (e1[2] * e2[0] - e1[0] * e2[2]) / 2];
-      const inside = v.find((x) => x !== a && x !== b && x !== c)!;
-      if (normal[0]! * (vx(inside) - vx(a)) + normal[1]! * (vy(inside) - vy(a)) < 0)
-        normal = normal.map((x) => -x);
-      for (const m of [mid(a, b), mid(b, c), mid(a, c)])
-        for (let d = 0; d < 2; d += 1) {
-          const to = unknown[d]![m]!;
-          if (to >= 0) loads[tag - 1]![to]! += normal[d]! / 3;
-        }
-    }
   });
+  const inner = new Map<string, number>();
+  tets.forEach((v, t) => {
+    for (const [i, j, k] of SIDES) inner.set([v[i], v[j], v[k]].sort((p, q) => p - q).join(' '), t);
+  });
+  for (const [name, side] of outside) {
+    const tag = kindOf(side);
+    if (tag <= 0) continue;
+    const [a, b, c] = side;
+    const e1 = [vx(b) - vx(a), vy(b) - vy(a), vz(b) - vz(a)] as const;
+    const e2 = [vx(c) - vx(a), vy(c) - vy(a), vz(c) - vz(a)] as const;
+    let normal = [
+      (e1[1] * e2[2] - e1[2] * e2[1]) / 2,
+      (e1[2] * e2[0] - e1[0] * e2[2]) / 2,
+      (e1[0] * e2[1] - e1[1] * e2[0]) / 2,
+    ];
+    const inside = tets[inner.get(name)!]!.find((x) => x !== a && x !== b && x !== c)!;
+    const inwards = [vx(inside) - vx(a), vy(inside) - vy(a), vz(inside) - vz(a)];
+    if (normal.reduce((sum, n, d) => sum + n * inwards[d]!, 0) < 0) normal = normal.map((x) => -x);
+    for (const m of [mid(a, b), mid(b, c), mid(a, c)])
+      for (let d = 0; d < 3; d += 1) {
+        const to = unknown[d]![m]!;
+        if (to >= 0) loads[tag - 1]![to]! += normal[d]! / 3;
+      }
+  }
 
   const factor = factoriseIndefinite(matrix);
   const out = new Float64Array(faces * faces);
@@ -157,8 +192,7 @@ export function tetraPortMatrix(
       const { volume } = barycentric(v.map((i) => [vx(i), vy(i), vz(i)]));
       for (let q = 0; q < 4; q += 1)
         for (let r = 0; r < 4; r += 1)
-          rest[pressureStart + v[q]!]! -=
-            ((EPSILON * volume * (q === r ? 2 : 1)) / 20) * x[pressureStart + v[r]!]!;
+          rest[pressure[v[q]!]!]! -= ((EPSILON * volume * (q === r ? 2 : 1)) / 20) * x[pressure[v[r]!]!]!;
     }
     solveIndefinite(factor, rest);
     for (let i = 0; i < total; i += 1) x[i]! += rest[i]!;
