@@ -16,6 +16,9 @@ import { templateOf } from './template.ts';
 /** What was typed stays while the panel is away. */
 const typed = new WeakMap<Desk, string>();
 
+/** Larger files are none of measurements. */
+const MOST_FILE = 4_000_000;
+
 const wordsOf = ({ what, where, remedy }: Pick<Problem, 'what' | 'where' | 'remedy'>): string =>
   `${where ? `${where.charAt(0).toUpperCase()}${where.slice(1)}: ` : ''}${what} ${remedy}`;
 
@@ -154,7 +157,10 @@ export function AsBuiltPanel() {
             onChange={async (event) => {
               const file = event.target.files?.[0];
               event.target.value = '';
-              if (file) write(await file.text());
+              if (!file) return;
+              if (file.size > MOST_FILE)
+                setSays('The file is larger than any table of measurements. Choose another.');
+              else write(await file.text());
             }}
           />
         </label>

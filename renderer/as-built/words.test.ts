@@ -20,7 +20,7 @@ describe('what the made chip does, in words', () => {
       /^As made it still meets its targets; the furthest is in a, −0\.0\d+ % off\.$/,
     );
     expect(said(cross(), built(`${HEAD}b,width,1100,1`))).toMatch(
-      /^As made it misses one target of 2: in a is −4\.8 % off, 1\.0 % is allowed\.$/,
+      /^As made it misses one target of two: in a is −4\.8 % off, 1\.0 % is allowed\.$/,
     );
     expect(said(cross(), built(`${HEAD}b,width,1100,1\nd,width,1100,1`))).toMatch(/misses all its targets/);
     const free = cross({ targets: [] });

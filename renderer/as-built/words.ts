@@ -4,7 +4,7 @@ import type { Chip, Drive } from '../../solver/chip/chip.ts';
 import type { Making, TargetResult } from '../../solver/chip/result.ts';
 import { inUnit } from '../../solver/chip/units.ts';
 import { type Answer, strong } from '../verdict/answer.ts';
-import { counted, figure } from '../words/figure.ts';
+import { count, counted, figure } from '../words/figure.ts';
 
 const percent = (share: number, digits = 2): string => figure(share, 'share', { unit: '%', digits });
 
@@ -70,7 +70,7 @@ export function madeWords(chip: Chip, { result }: AsBuilt): Answer['says'] {
   if (missed === 0)
     return ['As made it still meets its targets; the furthest is ', worst.name, ', ', off, ' off.'];
   return [
-    `As made it misses ${missed === result.targets.length ? (missed === 1 ? 'its target' : 'all its targets') : `${counted(missed, 'target')} of ${result.targets.length}`}: ${worst.name} is `,
+    `As made it misses ${missed === result.targets.length ? (missed === 1 ? 'its target' : 'all its targets') : `${counted(missed, 'target')} of ${count(result.targets.length)}`}: ${worst.name} is `,
     off,
     ` off, ${percent(worst.within)} is allowed.`,
   ];
