@@ -73,6 +73,16 @@ function ports({ ports: all }: Result): string[] {
       { head: 'pressure', kind: 'pressure', values: shown.map(({ pressure }) => pressure) },
       { head: 'flow in', kind: 'flow', values: shown.map(({ flow }) => flow) },
       { head: 'share', kind: 'share', values: shown.map(({ share }) => share) },
+      ...(shown.some(({ band }) => band)
+        ? ([
+            {
+              head: '± solving',
+              kind: 'share',
+              digits: 2,
+              values: shown.map(({ band }) => band?.share ?? null),
+            },
+          ] as const)
+        : []),
       ...makingColumns(shown.map(({ making }) => making?.share)),
     ]),
     ...more,
@@ -199,6 +209,17 @@ function findings({ findings: all }: Result, width: number): string[] {
   ];
 }
 
+/** How far the numbers may be off by what the solver knows of its own errors. */
+function trustLine({ bands, junctions }: Result): string[] {
+  if (!bands) return [];
+  const within = (share: number): string =>
+    share === 0 ? 'as imposed' : `within ${formatQuantity(share, 'share', { digits: 2 })}`;
+  const corners = junctions === 'solved' ? '' : ' (in channels; corners of ideal junctions are not known)';
+  return [
+    `Solving: shares are right ${within(bands.share)}, flows ${within(bands.flow)}, pressures ${within(bands.pressure)}, wall shear ${within(bands.shear)}${corners}, by the sum of what the solver knows of its own errors.`,
+  ];
+}
+
 /** What the bands of making mean, where there are any. */
 function makingLine({ making }: Result): string[] {
   if (!making) return [];
@@ -252,7 +273,7 @@ export function reportText(chip: Chip, result: Result, width = 100): string {
     limits(chip, result),
     findings(result, width),
     [
-      ...makingLine(result).flatMap((line) => wrapped(line, width)),
+      ...[...trustLine(result), ...makingLine(result)].flatMap((line) => wrapped(line, width)),
       ...wrapped(balanceLine(result), width),
       lastLine(result),
     ],

@@ -26,7 +26,10 @@ export interface CellEvidence {
   readonly id: string;
   /** m */
   readonly at: readonly [number, number];
-  /** Bound of the relative error of its port matrix: that of the shape solved, and what comes of solving it with upright walls. */
+  /**
+   * Bound of the relative error of its port matrix: that of the shape solved (0 where a hole's own is in it),
+   * and what comes of solving it with upright walls.
+   */
   readonly accuracy: number;
   readonly upright: number;
 }

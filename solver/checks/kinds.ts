@@ -323,6 +323,14 @@ export const FINDING_KINDS = {
     threshold: 'it is',
     source: 'a limit is never met for want of knowledge',
   },
+  'close-call': {
+    of: 'trust',
+    title: 'Met by less than the error',
+    formula:
+      'what is left between the number and its limit, over the number; of a target, what is left of its tolerance over the number',
+    threshold: 'the band of the number',
+    source: 'what the solver knows of its own errors',
+  },
   'law-mixed': {
     of: 'cells',
     title: 'Constants of two laws',

@@ -34,7 +34,8 @@ export function cellEvidence({ cells }: Lumped): CellEvidence[] {
       {
         id,
         at: [origin[0] / NANOMETRES, origin[1] / NANOMETRES],
-        accuracy: flowError - profileError,
+        // What the turn into a hole adds is no matter of how exactly the shape was solved.
+        accuracy: spec.faces.some(({ kind }) => kind === 'rim') ? 0 : flowError - profileError,
         upright: profileError,
       },
     ];

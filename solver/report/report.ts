@@ -15,6 +15,7 @@ import type { Finding } from '../problem/finding.ts';
 import { bandsOf, type ErrorBands } from './bands.ts';
 import { withStrain } from './cell-strain.ts';
 import { cellResults, inertiaFindings, inertiaShares } from './cells.ts';
+import { closeCalls } from './close-calls.ts';
 import { driftOf } from './drift.ts';
 import { cellEvidence, stretchEvidence } from './evidence.ts';
 import { exposureOf } from './exposure.ts';
@@ -65,6 +66,8 @@ export function report(
     { chip, graph, lumped, flow, pieces, density: fluid.density, inertia, ports, cells, fluid },
     depends,
   );
+  const targets = targetResults(chip, ports, channels, total);
+  const junctions = junctionsOf(lumped);
   const stretches = stretchEvidence(lumped, flow, pieces);
   const checks = checkFindings({
     chip,
@@ -80,13 +83,13 @@ export function report(
     version: 1,
     chip: chip.name,
     status: 'solved',
-    junctions: junctionsOf(lumped),
+    junctions,
     fluid: { viscosity: fluid.viscosity, density: fluid.density },
     ports: bands ? withBands(ports, bands) : ports,
     channels,
     cells: chip.limits.length > 0 ? withStrain(cells, net, lumped, flow) : cells,
     routes: exposure.results,
-    targets: targetResults(chip, ports, channels, total),
+    targets,
     limits: limits.results,
     pumps: pumps.pumps,
     ...(drift ? { drift: drift.drift } : {}),
@@ -103,6 +106,7 @@ export function report(
         ...faultFindings(graph, flow),
         ...unresolvedFindings(lumped, flows),
         ...limits.findings,
+        ...closeCalls(chip, { limits: limits.results, targets, bands, junctions }),
         ...exposure.findings,
         ...pumps.findings,
         ...(drift?.findings ?? []),

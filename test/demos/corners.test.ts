@@ -49,3 +49,9 @@ test('the other demos meet what they ask with their junctions solved', () => {
     ).toBe(true);
   }
 });
+
+test('circulating cells: the dose decides with junctions solved too', () => {
+  const result = solve(read('circulating-cells'), COARSE);
+  expect(result.junctions).toBe('solved');
+  expect(result.limits.map(({ met }) => met)).toEqual([true, false]);
+});

@@ -8,7 +8,7 @@ import { applyEdit } from '../../solver/chip/edit.ts';
 import type { PieceResult, Result } from '../../solver/chip/result.ts';
 import { solve } from '../../solver/solve.ts';
 import { run } from '../cli/run.ts';
-import { microlitresPerMinute, peakShear, resistance, rounded, taper } from './by-hand.ts';
+import { microlitresPerMinute, peakShear, resistance, rounded, stressPower, taper } from './by-hand.ts';
 
 const FOLDER = join(import.meta.dirname, '../../assets/demo');
 const FILES = readdirSync(FOLDER).filter((file) => file.endsWith('.json'));
@@ -55,6 +55,7 @@ describe('every demo', () => {
     ['gravity-crossing', 0],
     ['recirculation-loop', 0],
     ['cell-loading', 1],
+    ['circulating-cells', 1],
   ];
   test.each(CODES)('%s ends the command with %i', async (file, code) => {
     const ran = await run(join(FOLDER, `${file}.json`), '--junctions', 'ideal');
@@ -180,6 +181,67 @@ describe('recirculation loop', () => {
     // From the outlet backwards: what the loop pump draws from lies below the bleed's junction.
     near(port(result, 'loop pump in').pressure, bleed - loop * resistance(mu, head, 400e-6, depth));
     expect(result.limits.map(({ met }) => met)).toEqual([true, true]);
+  });
+});
+
+describe('circulating cells', () => {
+  const mu = (result: Result): number => result.fluid.viscosity!;
+  /** Damage of all passes on the mean path, by the law of the demo: ducts and tapers slice by slice. */
+  const damage = (viscosity: number, window: number, passes: number): number => {
+    const flow = microlitresPerMinute(40);
+    const exponent = 2.416 / 0.785;
+    const per = (width: number, length: number): number =>
+      ((viscosity * flow) ** exponent * stressPower(width, 60e-6, exponent) * length) / flow;
+    let dose = per(300e-6, (50 - 1) * 1e-3) + per(window, 6e-3);
+    const slices = 24;
+    for (let i = 0; i < slices; i += 1) {
+      dose += 2 * per(window + ((i + 0.5) / slices) * (300e-6 - window), 2e-3 / slices);
+    }
+    return (3.62e-5 * (passes * dose) ** 0.785) / 100;
+  };
+  const widened = (chip: Chip, window: number): Chip =>
+    applyEdit(chip, {
+      label: 'widen the window',
+      changes: (
+        [
+          ['narrowing', [300_000, window]],
+          ['window', [window, window]],
+          ['widening', [window, 300_000]],
+        ] as const
+      ).map(([id, width]) => ({
+        kind: 'put',
+        list: 'channels',
+        id,
+        part: { ...chip.channels.find((channel) => channel.id === id)!, width },
+      })),
+    });
+
+  test('no moment harms, the dose of all passes does; a wider window saves the cells, as the caption says', async () => {
+    const drawn = read('circulating-cells');
+    const result = await solved(drawn);
+    const [moment, hour] = result.limits;
+    expect(moment).toMatchObject({ met: true, limit: 150 });
+    expect(moment!.worst).toBeLessThan(25);
+    expect(hour).toMatchObject({ met: false, path: 'wall-hugging', where: 'window#1' });
+    const route = result.routes.find(({ from, to }) => from === 'pump out' && to === 'pump in')!;
+    near(route.damage[0]!.mean, damage(mu(result), 60e-6, 41), 0.01);
+    expect(hour!.worst).toBeGreaterThan(route.damage[0]!.mean!);
+
+    const wider = await solved(widened(drawn, 90_000));
+    expect(wider.limits.map(({ met }) => met)).toEqual([true, true]);
+    near(wider.routes[0]!.damage[0]!.mean, damage(mu(wider), 90e-6, 41), 0.01);
+  });
+
+  test('its passes are those of the loop: an hour over its own volume and that of its tubing', async () => {
+    const drawn = read('circulating-cells');
+    const flow = microlitresPerMinute(40);
+    const chip = 60e-6 * (49e-3 * 300e-6 + 6e-3 * 60e-6 + 4e-3 * 180e-6);
+    const tubing = 2 * 0.15 * (Math.PI / 4) * 0.5e-3 ** 2;
+    const round = (chip + tubing) / flow;
+    const law = drawn.limits.find((limit) => 'law' in limit)!;
+    expect(law).toMatchObject({ passes: Math.ceil(3600 / round) });
+    const kinds = (await solved(drawn)).findings.map(({ kind }) => kind);
+    expect(kinds).not.toContain('loop-passes');
   });
 });
 
