@@ -118,7 +118,7 @@ for (const [state, go] of Object.entries(STATES)) {
       await sitting.page.setViewportSize(look);
       await sitting.page.emulateMedia({ colorScheme: look.scheme });
       await sitting.page.waitForTimeout(400);
-      await sitting.page.screenshot({ path: join(FOLDER, `${state.replaceAll(" ", "-")}-${look.name}.png`) });
+      await sitting.page.screenshot({ path: join(FOLDER, `${state.replaceAll(' ', '-')}-${look.name}.png`) });
     }
     console.log(`${state}: four pictures`);
   } finally {
