@@ -1,7 +1,7 @@
 import { boxOfParts, findParts } from '../edits/parts.ts';
-import { fitted, panned, zoomed } from '../sheet/camera.ts';
+import { fitted, INSET, panned, zoomed } from '../sheet/camera.ts';
 import { OVERLAYS } from '../sheet/overlay.ts';
-import { fitChip, INSET } from '../sheet/sheet.tsx';
+import { fitChip } from '../sheet/sheet.tsx';
 import type { Desk } from '../state/desk.ts';
 import { TABS } from '../state/view.ts';
 import type { Command } from './command.ts';

@@ -54,6 +54,9 @@ export interface Inset {
   readonly bottom: number;
 }
 
+/** px kept free round the chip when it is fitted: its figures, the words beside its ports, the legend. */
+export const INSET: Inset = { left: 56, right: 56, top: 40, bottom: 76 };
+
 /** The camera that shows a box as large as the view allows, with px of `inset` kept free. */
 export function fitted(box: Box, size: Size, inset: Inset): Camera {
   const wide = Math.max(1, size.width - inset.left - inset.right);

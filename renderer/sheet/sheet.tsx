@@ -2,13 +2,10 @@ import { useEffect, useRef } from 'react';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import type { ToolEvent } from '../tools/tool.ts';
-import { fitted, panned, toPlan, toScreen, zoomed } from './camera.ts';
+import { fitted, INSET, panned, toPlan, toScreen, zoomed } from './camera.ts';
 import { Legend } from './legend.tsx';
 import { createPicture } from './picture.ts';
 import { PointerNote } from './pointer-note.tsx';
-
-/** px kept free round the chip when it is fitted: its figures, the words beside its ports, the legend. */
-export const INSET = { left: 56, right: 56, top: 40, bottom: 76 } as const;
 
 /** The camera as it was last fitted: while it is that one, the chip stays fitted to the sheet. */
 let fittedCamera: unknown = null;

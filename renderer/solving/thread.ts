@@ -113,10 +113,8 @@ export function solvingThread(
     if (!dragDue || !drag) return;
     dragDue = false;
     const { id } = drag;
-    hand?.solve(
-      send(drag.chip, true, (answered) => ({ kind: 'dragged', id, ...answered })),
-      PREVIEW_ACCURACY,
-    );
+    const waiting = send(drag.chip, true, (answered) => ({ kind: 'dragged', id, ...answered }));
+    hand?.solve(waiting, PREVIEW_ACCURACY);
   };
   const work = (): void => {
     if (asked) return;

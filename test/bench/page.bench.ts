@@ -81,6 +81,7 @@ function crossChip(): string {
   const chip = {
     ...emptyChip(),
     name: 'cross',
+    layers: [{ id: 'flow', depth: 50_000, profile: { kind: 'rectangle' }, fillet: 25_000 }],
     outline: { width: 40 * mm, height: 20 * mm },
     channels: ends.map((end, i) => ({
       id: `arm ${i + 1}`,

@@ -1,4 +1,5 @@
 import type { BrowserContext, Page } from 'playwright-core';
+import { fitted, INSET, toScreen } from '../../renderer/sheet/camera.ts';
 import { launch } from './browser.ts';
 import { type Host, startHost } from './host.ts';
 
@@ -66,4 +67,19 @@ export async function answered(page: Page): Promise<void> {
   await page.locator('.verdicts[aria-busy="false"]').waitFor({ timeout: 120_000 });
   await page.waitForTimeout(150);
   await page.locator('.verdicts[aria-busy="false"]').waitFor({ timeout: 120_000 });
+}
+
+/** Where a place of the chip (mm from its lower left) lies on the page, while the whole chip is shown. */
+export async function placeOnPage(
+  page: Page,
+  outline: { readonly width: number; readonly height: number },
+  x: number,
+  y: number,
+): Promise<{ readonly x: number; readonly y: number }> {
+  const box = (await page.locator('.sheet-surface').first().boundingBox())!;
+  const size = { width: box.width, height: box.height };
+  const right = outline.width * 1e6;
+  const camera = fitted({ left: 0, bottom: 0, right, top: outline.height * 1e6 }, size, INSET);
+  const [across, down] = toScreen(camera, size, [x * 1e6, y * 1e6]);
+  return { x: box.x + across, y: box.y + down };
 }

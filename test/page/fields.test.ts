@@ -3,9 +3,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { Page } from 'playwright-core';
 import { expect, test } from 'vitest';
-import { fitted, toScreen } from '../../renderer/sheet/camera.ts';
-import { INSET } from '../../renderer/sheet/sheet.tsx';
-import { sit } from './desk.ts';
+import { placeOnPage, sit } from './desk.ts';
 import { EVERYTHING } from './everything.ts';
 
 /**
@@ -18,12 +16,9 @@ const NONSENSE = ['three bananas', '12 parsec', '1e', '--4 µm', '5 mm of it'];
 
 /** A place on the sheet, mm of the chip, clicked. */
 async function clickAt(page: Page, x: number, y: number): Promise<void> {
-  const box = (await page.locator('.sheet-surface').first().boundingBox())!;
-  const size = { width: box.width, height: box.height };
   const { width, height } = EVERYTHING.outline;
-  const camera = fitted({ left: 0, bottom: 0, right: width * 1e3, top: height * 1e3 }, size, INSET);
-  const [sx, sy] = toScreen(camera, size, [x * 1e6, y * 1e6]);
-  await page.mouse.click(box.x + sx, box.y + sy);
+  const at = await placeOnPage(page, { width: width / 1e3, height: height / 1e3 }, x, y);
+  await page.mouse.click(at.x, at.y);
 }
 
 /** Every field of the card now open, nonsense typed into it; the labels of those that took it wrongly. */
