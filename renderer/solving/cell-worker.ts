@@ -11,7 +11,7 @@ interface Scope {
 const scope = globalThis as unknown as Scope;
 
 /** What this thread solved itself: copies of one shape in one chip are asked for one after the other. */
-const kept = memoryStore(64e6);
+const kept = memoryStore(32e6);
 
 scope.addEventListener('message', ({ data: { id, shape, name, accuracy } }) => {
   const found = solveOrdered(shape, accuracy, name, kept);

@@ -3,6 +3,7 @@ import type { CellSpec } from '../../solver/cell/cut/spec.ts';
 import { decodeSolution, encodeSolution } from '../../solver/cell/encode.ts';
 import { cellPicture } from '../../solver/cell/picture.ts';
 import { cellKey } from '../../solver/cell/solve-cell.ts';
+import { memoryStore } from '../../solver/cell/store.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { applyEdit } from '../../solver/chip/edit.ts';
 import type { Graph } from '../../solver/chip/graph.ts';
@@ -22,6 +23,8 @@ export interface CellHand {
 }
 /** An answer is given anew for a junction that came only after this many times as long as one takes. */
 const PATIENCE = 3;
+/** Bytes of solved junctions held beside those in use; the project keeps the others. */
+const MOST_KEPT = 96e6;
 /** Keys asked for at once, within what a request may carry. */
 const MOST_WANTED = 256;
 
@@ -39,7 +42,7 @@ export function solvingThread(
   later: (work: () => void) => void,
   hand: CellHand | null = null,
 ): (order: Order) => void {
-  let memory = emptyMemory();
+  let memory = emptyMemory(memoryStore(MOST_KEPT));
   let chip: Chip | null = null;
   let options: SolveOptions = {};
   let newest = 0;
@@ -167,7 +170,7 @@ export function solvingThread(
         }
         return soon();
       case 'load':
-        memory = emptyMemory();
+        memory = emptyMemory(memoryStore(MOST_KEPT));
         wanted.clear();
         open = 0;
         chip = order.chip;

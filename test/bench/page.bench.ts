@@ -212,8 +212,9 @@ async function memory(sitting: Sitting, what: string): Promise<BenchRow> {
   for (const { type, id } of processInfo) {
     if (type !== 'renderer') continue;
     try {
-      const pages = Number(readFileSync(`/proc/${id}/statm`, 'utf8').split(' ')[1]);
-      most = Math.max(most, (pages * 4096) / 1e6);
+      // what it shares with other processes is counted in parts
+      const shared = /^Pss:\s+(\d+) kB/m.exec(readFileSync(`/proc/${id}/smaps_rollup`, 'utf8'));
+      most = Math.max(most, Number(shared?.[1] ?? 0) / 1e3);
     } catch {
       // not told where there is no /proc
     }
