@@ -45,6 +45,7 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
           width={Math.min(...channel.width)}
           flow={widest?.flow ?? null}
           viscosity={result?.fluid.viscosity ?? null}
+          shear={{ mean: widest?.meanWallShear ?? null, peak: widest?.peakWallShear ?? null }}
           most={ramp.to}
         />
       )}

@@ -18,7 +18,10 @@ export interface SectionPictureProps {
   /** nm */
   readonly width: number;
   readonly flow: number | null;
+  /** Null of a fluid that thins: then its shear is told, and not drawn from the section alone. */
   readonly viscosity: number | null;
+  /** Pa, as the answer has them. */
+  readonly shear?: { readonly mean: number | null; readonly peak: number | null };
   /** Wall shear at the end of the ramp, Pa. */
   readonly most: number;
 }
@@ -27,7 +30,7 @@ export interface SectionPictureProps {
  * The cross-section with the wall shear drawn outward from its wall, in the colours of the sheet; figures
  * where it is read: roof and floor, and the side.
  */
-export function SectionPicture({ layer, width, flow, viscosity, most }: SectionPictureProps) {
+export function SectionPicture({ layer, width, flow, viscosity, shear: told, most }: SectionPictureProps) {
   const [, again] = useReducer((n: number) => n + 1, 0);
   useEffect(() => onTheme(again), []);
   const wide = width / 1e9;
@@ -70,7 +73,11 @@ export function SectionPicture({ layer, width, flow, viscosity, most }: SectionP
   return (
     <figure className="section-picture">
       <figcaption>
-        {gradient === null ? 'Cross-section' : 'Cross-section, wall shear drawn outward'}
+        {gradient !== null
+          ? 'Cross-section, wall shear drawn outward'
+          : told?.mean != null && told.mean > 0
+            ? `Cross-section; wall shear of this thinning fluid ${figure(told.mean, 'stress', { digits: 3 })} on average${told.peak === null ? '' : `, ${figure(told.peak, 'stress', { digits: 3 })} at most`}`
+            : 'Cross-section'}
       </figcaption>
       <svg
         viewBox={`0 0 ${WIDE} ${HIGH}`}
