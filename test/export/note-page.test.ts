@@ -86,7 +86,7 @@ test('the note, the flow split and a mask by keyboard; light and dark; the numbe
     ] as const) {
       await tabTo(page, verb);
       await page.keyboard.press('Enter');
-      await page.getByRole('dialog').waitFor();
+      await page.getByRole('dialog').getByText(host.data).waitFor();
       await page.keyboard.press('Enter');
       await page.getByText(done).waitFor();
       expect(readdirSync(host.data)).toContain(made);
@@ -98,7 +98,7 @@ test('the note, the flow split and a mask by keyboard; light and dark; the numbe
     await page.keyboard.press('u');
     await tabTo(page, /^ Write the note$/);
     await page.keyboard.press('Enter');
-    await page.getByRole('dialog').waitFor();
+    await page.getByRole('dialog').getByText(host.data).waitFor();
     await page.keyboard.press('Enter');
     await page.getByText(/Written to .*splitter note\.pdf/).waitFor();
     const pdf = readFileSync(join(host.data, 'Eight-way splitter note.pdf'), 'latin1');
