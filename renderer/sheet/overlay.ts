@@ -1,6 +1,6 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { PieceResult, Result } from '../../solver/chip/result.ts';
-import type { Kind } from '../../solver/chip/units.ts';
+import { type Kind, metres } from '../../solver/chip/units.ts';
 
 /** What the colour of the fluid shows. */
 export const OVERLAYS = [
@@ -115,7 +115,8 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
   const values = new Map<string, Span[]>();
   if (overlay === 'depth') {
     const depths = new Map(chip.layers.map((layer) => [layer.id, layer.depth / 1e9]));
-    for (const channel of chip.channels) values.set(channel.id, whole(depths.get(channel.layer) ?? null));
+    for (const { id, layer, depth } of chip.channels)
+      values.set(id, whole(depth === undefined ? (depths.get(layer) ?? null) : metres(depth)));
   } else if (overlay === 'findings') {
     for (const finding of result?.findings ?? []) {
       const id = finding.where.replace(/#\d+$/, '');
