@@ -79,6 +79,8 @@ export function drawPortWords(
   size: Size,
   palette: Palette,
   room: Room,
+  /** What words cross only where they have no other place. */
+  edge: Room,
   spatial: Spatial,
 ): void {
   const covered = coverage(camera, size, spatial);
@@ -103,17 +105,23 @@ export function drawPortWords(
             : where === 'above'
               ? [x - wide / 2, y - away - 2 * LINE, y - away - LINE]
               : [x - wide / 2, y + away, y + away + LINE];
-    const found = OTHERS[side].find((where) => {
+    const fits = (where: Side): boolean => {
       const [left, first, second] = box(where);
+      const under = covered(left, first, wide, second + LINE - first);
       return (
         left > 2 &&
         left + wide < size.width - 2 &&
-        (where === side ||
-          covered(left, first, wide, second + LINE - first) <= (where === 'around' ? 1 : 0)) &&
+        (where === side || under <= (where === 'around' ? 1 : 0)) &&
         room.free(left - 2, first, wide + 4, LINE) &&
         room.free(left - 2, second, wide + 4, LINE)
       );
-    });
+    };
+    const clear = (where: Side): boolean => {
+      const [left, first, second] = box(where);
+      return edge.free(left - 2, first, wide + 4, LINE) && edge.free(left - 2, second, wide + 4, LINE);
+    };
+    const able = OTHERS[side].filter(fits);
+    const found = able.find(clear) ?? able[0];
     if (!found) continue;
     const [left, first, second] = box(found);
     room.fill(left - 2, first, wide + 4, LINE);

@@ -114,13 +114,14 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         const look = palette();
         drawPorts(ctx, d.chip, camera, size, look);
         const room = new Room();
-        takeEdge(room, d.chip, camera, size);
+        const edge = new Room();
+        takeEdge(edge, d.chip, camera, size);
         for (const port of d.chip.ports) {
           const [x, y] = toScreen(camera, size, port.at);
           room.fill(x - 6, y - 6, 12, 12);
         }
         drawPlaceWords(ctx, d.places, camera, size, look, room, d.spatial);
-        drawPortWords(ctx, d.ports, camera, size, look, room, d.spatial);
+        drawPortWords(ctx, d.ports, camera, size, look, room, edge, d.spatial);
         drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, d.spatial);
         drawScaleBar(ctx, camera, size, look);
       })(),
