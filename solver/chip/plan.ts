@@ -1,11 +1,12 @@
 import type { Edge, Shape } from '../mesh/mesh.ts';
 import type { Chip, Point } from './chip.ts';
-import { curve, pointAt } from './geometry/curve.ts';
+import { type Curve, curve, pointAt } from './geometry/curve.ts';
 import { filletLoop, type Reduced } from './geometry/fillet.ts';
 import { cornerPatch, discPatch, type Patch, polygonPatch, stripPatch, type Way } from './geometry/patch.ts';
 import { unite } from './geometry/union.ts';
 import type { Graph } from './graph.ts';
 import { siteCorners } from './plan-corners.ts';
+import { unitedInParts } from './plan-parts.ts';
 import { type Drawing, drawingOf } from './read-graph-drawing.ts';
 
 /** A body of the plan; lengths in nm, tags label its edges (0 is wall). */
@@ -192,13 +193,24 @@ export function planCavities(chip: Chip, graph: Graph, layer: string, options: C
   const fillet = options.fillets ? chip.layers[layerIndex]!.fillet : 0;
   const cavities: PlanCavity[] = [];
   for (const [cavity, bodies] of [...byCavity].sort((a, b) => a[0] - b[0])) {
-    for (const shape of planShape(drawing, bodies, fillet).shapes) cavities.push({ cavity, shape });
+    // a cut would shorten the edges that fillets are fitted to
+    const whole =
+      fillet === 0 ? unitedInParts(drawing, bodies, (some) => planShape(drawing, some, 0).shapes) : undefined;
+    const shapes = whole ? [whole] : planShape(drawing, bodies, fillet).shapes;
+    for (const shape of shapes) cavities.push({ cavity, shape });
   }
   return cavities;
 }
 
 function disc(at: Point, radius: number): PlanBody {
   return { kind: 'disc', x: at[0], y: at[1], radius, tag: 0 };
+}
+
+/** How many equal chords of an arc lie within `error` of it. */
+export function chordsOf(c: Curve, error: number): number {
+  const radius = Math.abs(1 / c.curvature);
+  const step = 2 * Math.acos(Math.max(-1, 1 - error / radius));
+  return Math.max(1, Math.ceil((c.length / radius / step) * (1 - 1e-9)));
 }
 
 /** A loop as whole nanometres, arcs cut to chords no further than `error` from them. */
@@ -215,9 +227,7 @@ export function flatten(loop: readonly Edge[], error: number): Point[] {
     push(e.x, e.y);
     if (e.bulge === 0) continue;
     const c = curve(e.x, e.y, next.x, next.y, e.bulge);
-    const radius = Math.abs(1 / c.curvature);
-    const step = 2 * Math.acos(Math.max(-1, 1 - error / radius));
-    const count = Math.ceil((c.length / radius / step) * (1 - 1e-9));
+    const count = chordsOf(c, error);
     for (let i = 1; i < count; i++) push(...pointAt(c, (c.length * i) / count));
   }
   const first = points[0]!;

@@ -52,6 +52,7 @@ function randomOptions(seed: number): MaskOptions {
     chordError: [20, 100, 500][Math.floor(next() * 3)]!,
     mirror: next() < 0.5,
     pads: next() < 0.5,
+    marks: next() < 0.3,
     polarity: next() < 0.5 ? 'dark-field' : 'clear-field',
     lane: next() < 0.5 ? 0 : 100_000,
     labels: next() < 0.1,
@@ -64,9 +65,9 @@ function randomOptions(seed: number): MaskOptions {
 test('200 random chips through every format and back', async () => {
   let compared = 0;
   for (let seed = 1; seed <= 200; seed++) {
-    const chip = seed % 2 === 0 ? randomDrawing(seed, 4) : crowdedDrawing(seed);
+    const chip = seed % 2 === 0 ? randomDrawing(seed, 3) : crowdedDrawing(seed);
     if (chip.channels.length === 0) continue;
     compared += await check(modelOf(chip, randomOptions(seed)), `seed ${seed}`);
   }
-  expect(compared).toBeGreaterThan(3000);
+  expect(compared).toBeGreaterThan(2000);
 }, 120_000);

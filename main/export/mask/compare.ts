@@ -1,7 +1,9 @@
-import { area, FillRule, type Path64, type Paths64, xor } from 'clipper2-ts';
+import { area, FillRule, type Paths64, xor } from 'clipper2-ts';
 import { curve, part } from '../../../solver/chip/geometry/curve.ts';
+import { chordsOf } from '../../../solver/chip/plan.ts';
 import type { Edge, Shape } from '../../../solver/mesh/mesh.ts';
 import { flatPaths, perimeterOf } from './shapes.ts';
+import { tiles } from './split.ts';
 
 /** What was read back against what was to be drawn, nm². */
 export interface Comparison {
@@ -33,14 +35,45 @@ export function compare(
   );
   const bound = 2 * perimeter * (apart + offArc);
   if (bound <= allowed) return { difference: bound, allowed };
-  const wanted = shapes.flatMap((shape) => flatPaths(shape, Math.max(1, chordError / 4)));
-  const found = loops.flatMap((loop) => flatPaths([loop], Math.max(1, chordError / 4)));
-  return { difference: differenceOf(wanted, found) + perimeter * offArc, allowed };
+  const wanted = shapes.flatMap((shape) => flatPaths(shape, chordError));
+  const found = loops.flatMap((loop) => flatPaths([loop], chordError));
+  // what the chords take off the arcs is known; what they and the file lie apart is looked at
+  const cut = shapes.reduce((sum, shape) => sum + chordLoss(shape, chordError), 0);
+  const curved = loops.some((loop) => loop.some(({ bulge }) => bulge !== 0));
+  const known = (curved ? 2 : 1) * cut + perimeter * (offArc + ROUNDING);
+  return { difference: differenceOf(wanted, found) + known, allowed };
 }
+
+/** Corners of chords are rounded to whole nanometres. */
+const ROUNDING = Math.SQRT1_2;
+
+/** Area between the arcs of a shape and the chords that they are cut to. */
+function chordLoss(shape: Shape, chordError: number): number {
+  let sum = 0;
+  for (const loop of shape) {
+    loop.forEach((e, k) => {
+      if (e.bulge === 0) return;
+      const next = loop[k + 1 === loop.length ? 0 : k + 1]!;
+      const c = curve(e.x, e.y, next.x, next.y, e.bulge);
+      const radius = Math.abs(1 / c.curvature);
+      const count = chordsOf(c, chordError);
+      const sweep = c.length / radius / count;
+      sum += (count * radius * radius * (sweep - Math.sin(sweep))) / 2;
+    });
+  }
+  return sum;
+}
+
+/** Points that are compared at once. */
+const TILE = 1000;
 
 /** Area of the symmetric difference of two sets of polygons, outer ones counter-clockwise, holes clockwise. */
 export function differenceOf(a: Paths64, b: Paths64): number {
-  return xor(a, b, FillRule.NonZero).reduce((sum: number, path: Path64) => sum + area(path), 0);
+  let sum = 0;
+  for (const [p, q] of tiles(a, b, TILE)) {
+    for (const path of xor(p, q, FillRule.NonZero)) sum += area(path);
+  }
+  return sum;
 }
 
 /** The furthest that corners and arcs of two lists of loops lie apart; infinite where the lists differ in form. */

@@ -36,6 +36,23 @@ export function split(paths: Paths64, most: number): Path64[] {
   return out;
 }
 
+/**
+ * Two sets of polygons cut alike into pieces of at most `most` points, so that what is asked of both can be
+ * asked piece by piece: the cost of that then grows with their size and no faster.
+ */
+export function tiles(a: Paths64, b: Paths64, most: number): (readonly [Paths64, Paths64])[] {
+  const out: (readonly [Paths64, Paths64])[] = [];
+  const waiting: (readonly [Paths64, Paths64])[] = [[a, b]];
+  while (waiting.length > 0) {
+    const [p, q] = waiting.pop()!;
+    const count = [...p, ...q].reduce((sum, path) => sum + path.length, 0);
+    const boxes = count > most ? sides([...p, ...q]) : [];
+    if (boxes.length === 0) out.push([p, q]);
+    for (const box of boxes) waiting.push([rectClip(box, p), rectClip(box, q)]);
+  }
+  return out;
+}
+
 /** Each outer boundary with its holes. */
 function ordered(paths: Paths64): Paths64[] {
   const clipper = new Clipper64();
@@ -60,6 +77,12 @@ function ordered(paths: Paths64): Paths64[] {
 
 /** The two sides of a cut across the longer way: through the middle of a hole where the piece is small, else its points. */
 function halves(paths: Paths64): Paths64[] {
+  return sides(paths)
+    .map((side) => rectClip(side, paths))
+    .filter((half) => half.length > 0);
+}
+
+function sides(paths: Paths64): Rect64[] {
   let [x0, y0, x1, y1] = [Infinity, Infinity, -Infinity, -Infinity];
   for (const path of paths) {
     for (const { x, y } of path) {
@@ -73,7 +96,7 @@ function halves(paths: Paths64): Paths64[] {
   const [low, high] = across ? [x0, x1] : [y0, y1];
   const at = Math.min(high - 1, Math.max(low + 1, cutAt(paths, across)));
   const box: Rect64 = { left: x0, top: y0, right: x1, bottom: y1 };
-  const boxes: Rect64[] = across
+  return across
     ? [
         { ...box, right: at },
         { ...box, left: at },
@@ -82,7 +105,6 @@ function halves(paths: Paths64): Paths64[] {
         { ...box, bottom: at },
         { ...box, top: at },
       ];
-  return boxes.map((side) => rectClip(side, paths)).filter((half) => half.length > 0);
 }
 
 function cutAt(paths: Paths64, across: boolean): number {

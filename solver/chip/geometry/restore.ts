@@ -20,6 +20,12 @@ export function restoreLoop(path: Path64, grid: Grid, edges: TrueEdges): Edge[] 
   let runs: Run[] = [];
   for (let k = 0; k < n; k++) {
     const j = k + 1 === n ? 0 : k + 1;
+    const open = runs[runs.length - 1];
+    if (open && !edges.labelled && staysOn(open.source.curve, x[k]!, y[k]!, x[j]!, y[j]!)) {
+      open.x1 = x[j]!;
+      open.y1 = y[j]!;
+      continue;
+    }
     const source = sourceUnder(edges.near(x[k]!, y[k]!, x[j]!, y[j]!), x[k]!, y[k]!, x[j]!, y[j]!, slack);
     const last = runs[runs.length - 1];
     if (last && sameEdge(last.source, source)) {
@@ -32,13 +38,31 @@ export function restoreLoop(path: Path64, grid: Grid, edges: TrueEdges): Edge[] 
   return fromLeast(corners(runs));
 }
 
+/**
+ * Whether a side that follows one of an arc is the next of its chords: it lies on the circle, runs the same
+ * way and ends before the arc does. Most sides are; they need no search.
+ */
+function staysOn(c: Curve, x0: number, y0: number, x1: number, y1: number): boolean {
+  if (c.curvature === 0) return false;
+  const r = Math.abs(1 / c.curvature);
+  const free = 2 * sagitta(r);
+  if (arcOff(c, r, free, x1, y1) > 0 || arcOff(c, r, free, (x0 + x1) / 2, (y0 + y1) / 2) > 0) return false;
+  const d = alongArc(c, x1, y1);
+  if (d < 0 || d > c.length) return false;
+  const [tx, ty] = tangentAt(c, d);
+  return (x1 - x0) * tx + (y1 - y0) * ty > 0;
+}
+
 /** The true edges of all bodies, with an index where there are many. */
 export class TrueEdges {
   readonly #all: readonly Source[];
+  /** Whether any arc bears a label, which the outcome must keep. */
+  readonly labelled: boolean;
   readonly #index: Flatbush | undefined;
 
   constructor(all: readonly Source[]) {
     this.#all = all;
+    this.labelled = all.some(({ tag, curve: c }) => tag !== 0 && c.curvature !== 0);
     if (all.length <= 48) return;
     const index = new Flatbush(all.length);
     for (const { curve: c } of all) {
