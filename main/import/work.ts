@@ -6,6 +6,9 @@ export const LIMITS = {
   bytes: 64 * 1024 * 1024,
   /** Entities, those of references counted as often as they are placed. */
   entities: 200_000,
+  /** Pairs of group code and value of a DXF: of one entity, and of all that are kept. */
+  groups: 1_000_000,
+  allGroups: 3_000_000,
   /** Vertices of all of them together, curves cut to chords. */
   vertices: 2_000_000,
   /** References inside references. */
@@ -36,6 +39,7 @@ export class Work {
   readonly #watch: Watch;
   readonly #end: number;
   readonly #seconds: number;
+  #groups = 0;
   #ticks = 0;
   #told = -1;
   #stage: Stage = 'reading';
@@ -80,6 +84,17 @@ export class Work {
     this.tick();
     if (this.entities <= LIMITS.entities) return;
     throw tooMany('entities', LIMITS.entities, where);
+  }
+
+  /** Refuses `count` vertices to come before they are built. */
+  room(count: number, where: string): void {
+    if (this.vertices + count > LIMITS.vertices) throw tooMany('vertices', LIMITS.vertices, where);
+  }
+
+  /** `count` more groups of a DXF entity. */
+  group(count: number, where: string): void {
+    this.#groups += count;
+    if (this.#groups > LIMITS.allGroups) throw tooMany('groups', LIMITS.allGroups, where);
   }
 
   /** `count` more vertices. */

@@ -75,13 +75,18 @@ test('strokes without a fill are paths of that width, in the group named', () =>
 test('what is used again is placed again, with what is white in a layer of its own', () => {
   const drawing = drawingOf(
     svg(
-      '<defs><rect id="a" width="10" height="10"/></defs><use xlink:href="#a" x="5"/><use href="#a" fill="white"/>',
+      '<defs><rect id="rect1" width="10" height="10"/></defs><use xlink:href="#rect1" x="5"/><use href="#rect1" fill="white"/>',
     ),
   );
   expect(drawing.layers.map(({ name, regions }) => [name, regions.length])).toEqual([
     ['drawing', 1],
     ['drawing (white)', 1],
   ]);
+});
+
+test('a shape with a name of its own is a layer of that name; names that programs give are none', () => {
+  const drawing = drawingOf(svg('<g id="all"><rect id="FLOW" width="1" height="1"/><rect id="rect12" width="1" height="1"/></g>'));
+  expect(drawing.layers.map(({ name }) => name)).toEqual(['FLOW', 'all']);
 });
 
 test('text, pictures, hidden things and clips are listed', () => {

@@ -1,4 +1,5 @@
 import { Problem } from '../../../solver/problem/problem.ts';
+import { LIMITS } from '../work.ts';
 
 /** The pairs of group code and value that an ASCII DXF file is, one after another. */
 export class Pairs {
@@ -76,6 +77,14 @@ export function readEntity(pairs: Pairs): { entity: Entity; more: boolean } {
   for (;;) {
     if (!pairs.next()) return { entity: { type, codes, values, line }, more: false };
     if (pairs.code === 0) return { entity: { type, codes, values, line }, more: true };
+    if (codes.length >= LIMITS.groups) {
+      throw new Problem(
+        'too-many',
+        `One ${type.slice(0, 40)} has more than ${LIMITS.groups.toLocaleString('en')} groups.`,
+        `line ${line}`,
+        'Draw it with fewer points, or split it.',
+      );
+    }
     codes.push(pairs.code);
     values.push(pairs.value);
   }

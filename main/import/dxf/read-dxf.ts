@@ -115,6 +115,7 @@ function takeEntity(pairs: Pairs, into: Entity[], work: Work): boolean {
   if (pairs.code !== 0) return pairs.next();
   const { entity, more } = readEntity(pairs);
   work.entity(`line ${entity.line}`);
+  work.group(entity.codes.length, `line ${entity.line}`);
   work.at(pairs.share * 0.6);
   into.push(entity);
   return more;

@@ -12,6 +12,7 @@ import Flatbush from 'flatbush';
 import { arcPoints } from '../curves.ts';
 import type { DrawnLayer, Vertices } from '../drawing.ts';
 import type { Work } from '../work.ts';
+import { refuseTangles } from './tangles.ts';
 
 /** Furthest that chords lie off the arcs they stand for, nm. */
 const CHORD_ERROR = 20;
@@ -53,11 +54,13 @@ export function pathOf(vertices: Vertices, frame: Frame): Path64 {
 
 /** The union of a layer's closed regions, and how many outlines were taken as walls inside others. */
 export function layerAreas(layer: DrawnLayer, frame: Frame, work: Work): { areas: Area[]; posts: number } {
+  const drawn = layer.regions.map(({ loops }) => loops.map((loop) => pathOf(loop, frame)));
+  refuseTangles(drawn.flat(), `layer ${layer.name}`, work);
   const plain: Paths64 = [];
   const nesting: Paths64 = [];
-  layer.regions.forEach(({ loops, fill, nests }, i) => {
+  layer.regions.forEach(({ fill, nests }, i) => {
     work.at((0.5 * i) / layer.regions.length);
-    const paths = loops.map((loop) => pathOf(loop, frame));
+    const paths = drawn[i];
     if (nests) nesting.push(positive(paths[0]));
     else if (paths.length === 1 && fill === 'non-zero') plain.push(positive(paths[0]));
     else plain.push(...Clipper.union(paths, fill === 'even-odd' ? FillRule.EvenOdd : FillRule.NonZero));

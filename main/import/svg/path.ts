@@ -25,7 +25,8 @@ export function subpaths(data: string, tolerance: number, work: Work, where: str
     for (let at = 0; at < data.length; at += CHUNK) {
       for (const command of parser.parse(data.slice(at, at + CHUNK), [])) pen.take(command);
       // Counted as it grows: what is refused must not be built first.
-      if (pen.count - told > CHUNK) work.points(0, where);
+      work.room(pen.count, where);
+      work.tick(pen.count - told);
       told = pen.count;
     }
     const rest: SVGCommand[] = [];

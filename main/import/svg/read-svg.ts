@@ -15,6 +15,11 @@ const HOLDERS = new Set(['svg', 'g', 'a', 'switch']);
 const SILENT = new Set(['defs', 'symbol', 'title', 'desc', 'metadata', 'style', 'namedview', 'script']);
 const SHAPES = new Set(['path', 'rect', 'circle', 'ellipse', 'line', 'polyline', 'polygon']);
 
+/** Names that programs give by themselves. */
+const GIVEN_NAMES = /^(path|rect|circle|ellipse|line|polyline|polygon|use|g|svg|text|image|layer|shape)?[-_]?\d/i;
+/** Shapes with names of their own that are told apart; in drawings with more the groups' names say more. */
+const MOST_NAMED = 60;
+
 interface Place {
   readonly by: Affine;
   readonly style: Style;
@@ -73,6 +78,7 @@ class Walk {
   readonly sheet: Sheet;
   readonly #byId = new Map<string, Element>();
   readonly #tolerance: number;
+  readonly #named = new Set<string>();
   #done = 0;
   readonly #total: number;
 
@@ -170,7 +176,15 @@ class Walk {
     else this.#element(target, inner);
   }
 
-  #shape(element: Element, { by, style, layer }: Place, where: string): void {
+  /** The layer that a shape's own name makes, where it was given one by hand and they are not too many. */
+  #layerOf({ attributes: { id } }: Element, around: string): string {
+    if (!id || GIVEN_NAMES.test(id) || this.#named.size >= MOST_NAMED) return around;
+    this.#named.add(id);
+    return id;
+  }
+
+  #shape(element: Element, { by, style, layer: around }: Place, where: string): void {
+    const layer = this.#layerOf(element, around);
     if (style.visibility !== 'visible') {
       this.to.note('elements that are hidden', where);
       return;
