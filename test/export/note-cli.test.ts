@@ -216,13 +216,14 @@ describe('what cannot be written leaves what was there', () => {
       ['sh', ['-c', `${begin} && { trap '' XFSZ; ulimit -f 64; ${program}; }`, 'sh']],
     ];
     const said: string[] = [];
-    const told = ways
-      .values()
-      .map(([command, args]) => spawnSync(command, [...args, ...call(old)], { encoding: 'utf8' }))
-      .find(({ stdout, stderr }) => {
-        said.push(stderr);
-        return stdout.startsWith('old');
-      });
+    let told: { status: number | null; stdout: string; stderr: string } | null = null;
+    for (const [command, args] of ways) {
+      const ran = spawnSync(command, [...args, ...call(old)], { encoding: 'utf8' });
+      said.push(ran.stderr);
+      if (!ran.stdout.startsWith('old')) continue;
+      told = ran;
+      break;
+    }
     if (!told) throw new Error(said.join('\n'));
     expect(told.status).toBe(2);
     expect(told.stdout).toBe('oldnote.html\n');

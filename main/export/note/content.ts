@@ -116,12 +116,17 @@ function glance(chip: Chip, result: Result): Block {
   const over = result.limits.filter(({ met }) => met === false).length;
   const open = result.limits.filter(({ met }) => met === null).length;
   const cannot = (result.pumps ?? []).filter(({ met }) => met === false).length;
-  const parts = (count: number, bad: number, one: string): Run[] =>
-    count === 0
-      ? [`no ${one} is set`]
-      : bad === 0
-        ? [`${counted(count, one)}, all met`]
-        : [strong(count === 1 ? `the ${one} is missed` : `${bad} of ${counted(count, one)} missed`)];
+  const parts = (count: number, bad: number, one: string, unknown = 0): Run[] => {
+    if (count === 0) return [`no ${one} is set`];
+    const rest = unknown > 0 ? [`, ${unknown} not judged`] : [];
+    if (bad > 0)
+      return [
+        strong(count === 1 ? `the ${one} is missed` : `${bad} of ${counted(count, one)} missed`),
+        ...rest,
+      ];
+    const all = unknown === 0 ? 'all met' : `${count - unknown} met`;
+    return [`${counted(count, one)}, ${all}`, ...rest];
+  };
   return {
     kind: 'facts',
     rows: [
@@ -140,7 +145,7 @@ function glance(chip: Chip, result: Result): Block {
       { name: 'Flow split', value: parts(result.targets.length, missed, 'target') },
       {
         name: 'Limits',
-        value: [...parts(result.limits.length, over, 'limit'), ...(open > 0 ? [`, ${open} not judged`] : [])],
+        value: parts(result.limits.length, over, 'limit', open),
       },
       ...(cannot > 0
         ? [{ name: 'Pumps', value: [strong(`${counted(cannot, 'pump')} cannot do what is asked`)] }]

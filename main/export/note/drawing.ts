@@ -237,8 +237,8 @@ function over(chip: Chip, frame: Frame): Item[] {
     line([frame.right, frame.top - 1], [frame.right, y - 1.2], 0.09),
     ...measure([frame.left, y], [frame.right, y]),
     text([(frame.left + frame.right) / 2, y + 1], `${width} mm`, false),
-    line([frame.left - 4.6, frame.top], [x - 1.2, frame.top], 0.09),
-    line([frame.left - 4.6, frame.bottom], [x - 1.2, frame.bottom], 0.09),
+    line([frame.left - 6.6, frame.top], [x - 1.2, frame.top], 0.09),
+    line([frame.left - 6.6, frame.bottom], [x - 1.2, frame.bottom], 0.09),
     ...measure([x, frame.top], [x, frame.bottom]),
     text([x + 1, (frame.top + frame.bottom) / 2], `${height} mm`, true),
   ];
