@@ -31,7 +31,7 @@ for version in ('R12', 'R2000', 'R2010', 'R2018'):
     if version != 'R12':
         m.add_ellipse((5, 30), (3, 1), 0.4, dxfattribs={'layer': 'OVAL'})
         s = m.add_spline(dxfattribs={'layer': 'CURVE'})
-        s.set_closed([(40, 40), (50, 40), (50, 50), (40, 50)], degree=3)
+        s.set_closed([(40, 40, 0), (50, 40, 0), (50, 50, 0), (40, 50, 0)], degree=3)
         told['CURVE'] = abs(area(list(s.construction_tool().approximate(20000))))
     name = f'{folder}/{version}.dxf'
     doc.saveas(name)
