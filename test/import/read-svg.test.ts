@@ -85,7 +85,9 @@ test('what is used again is placed again, with what is white in a layer of its o
 });
 
 test('a shape with a name of its own is a layer of that name; names that programs give are none', () => {
-  const drawing = drawingOf(svg('<g id="all"><rect id="FLOW" width="1" height="1"/><rect id="rect12" width="1" height="1"/></g>'));
+  const drawing = drawingOf(
+    svg('<g id="all"><rect id="FLOW" width="1" height="1"/><rect id="rect12" width="1" height="1"/></g>'),
+  );
   expect(drawing.layers.map(({ name }) => name)).toEqual(['FLOW', 'all']);
 });
 
