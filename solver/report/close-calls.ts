@@ -1,5 +1,5 @@
 import type { Chip } from '../chip/chip.ts';
-import type { LimitResult, Result, TargetResult } from '../chip/result.ts';
+import type { LimitResult, TargetResult } from '../chip/result.ts';
 import type { Finding } from '../problem/finding.ts';
 import type { ErrorBands } from './bands.ts';
 
@@ -8,20 +8,19 @@ interface Judged {
   readonly limits: readonly LimitResult[];
   readonly targets: readonly TargetResult[];
   readonly bands: ErrorBands | null;
-  readonly junctions: Result['junctions'];
+  /** Whether junctions count as ideal: then everything is rough, and said to be. */
+  readonly rough: boolean;
 }
 
 /** Limits on wall shear and targets at ports that are met by less than their number may be off. */
-export function closeCalls(chip: Chip, { limits, targets, bands, junctions }: Judged): Finding[] {
-  if (!bands) return [];
-  // While junctions are ideal everything is rough, and said to be.
-  const severity = junctions === 'solved' ? 'warn' : 'note';
+export function closeCalls(chip: Chip, { limits, targets, bands, rough }: Judged): Finding[] {
+  if (!bands || rough) return [];
   const findings: Finding[] = [];
   const add = (where: string, what: string, spare: number, band: number): void => {
     if (spare >= band) return;
     findings.push({
       kind: 'close-call',
-      severity,
+      severity: 'warn',
       where,
       says: `${what} is met with ${percent(spare)} to spare, and its number may be ${percent(band)} off: it may as well be missed.`,
       do: 'Leave it more room, or solve the junctions more accurately.',

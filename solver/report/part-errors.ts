@@ -34,8 +34,8 @@ const SQUARE_BEND = 1 - (2 * Math.LN2) / Math.PI;
 const STAND_IN = 0.2;
 /**
  * A cell's bound is that of its worst pattern of pressures, and bounds of several cells rarely add up. Of
- * their sum, this part holds 100, 97 and 96 % of flows and shares of those 72 chips at 0.002, 0.005 and 0.02
- * asked, and is 10, 7 and 7.5 times the true error in the middle.
+ * their sum, this part holds 99, 97 and 95 % of flows and shares of those 72 chips at 0.002, 0.005 and 0.02
+ * asked, and is 9, 7 and 7 times the true error in the middle.
  */
 const OF_BOUND = 0.4;
 

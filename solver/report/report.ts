@@ -68,6 +68,8 @@ export function report(
   );
   const targets = targetResults(chip, ports, channels, total);
   const junctions = junctionsOf(lumped);
+  const rough =
+    junctions !== 'solved' && graph.sites.some(({ kind }) => kind === 'junction' || kind === 'chamber');
   const stretches = stretchEvidence(lumped, flow, pieces);
   const checks = checkFindings({
     chip,
@@ -106,7 +108,7 @@ export function report(
         ...faultFindings(graph, flow),
         ...unresolvedFindings(lumped, flows),
         ...limits.findings,
-        ...closeCalls(chip, { limits: limits.results, targets, bands, junctions }),
+        ...closeCalls(chip, { limits: limits.results, targets, bands, rough }),
         ...exposure.findings,
         ...pumps.findings,
         ...(drift?.findings ?? []),

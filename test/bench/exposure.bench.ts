@@ -131,30 +131,38 @@ function widened(chip: Chip, step: number): Chip {
   return { ...chip, channels };
 }
 
+/** Times of edits, and the mean of the processor's over all threads, ms. */
+interface Series {
+  readonly times: readonly number[];
+  readonly processor: number;
+}
+
 /**
  * Widths edited one after the other with junctions solved: median and mean of an edit, ms, where all shapes are
  * known beforehand but no flow through them is. With limits and without, on the same shapes.
  */
-function solvedEdits(count: number): { readonly limited: number[]; readonly plain: number[] } {
+function solvedEdits(count: number): { readonly limited: Series; readonly plain: Series } {
   const options = { accuracy: 0.02 };
   const store = memoryStore();
-  const series = (limits: readonly object[]): number[] => {
+  const series = (limits: readonly object[]): Series => {
     const session = new Session(store);
     let now = lattice(100, limits);
     session.update(now, options);
-    return Array.from({ length: count }, (_, step) => {
+    const before = process.cpuUsage();
+    const times = Array.from({ length: count }, (_, step) => {
       now = widened(now, step);
       const start = performance.now();
       session.update(now, options);
       return performance.now() - start;
     });
+    const { user, system } = process.cpuUsage(before);
+    return { times, processor: (user + system) / 1000 / count };
   };
   series([]);
   return { plain: series([]), limited: series(LIMITS) };
 }
 
 const middle = (times: readonly number[]): number => [...times].sort((a, b) => a - b)[times.length >> 1];
-const mean = (times: readonly number[]): number => times.reduce((sum, t) => sum + t, 0) / times.length;
 
 /** Median of an edit from chip to result. */
 function edits(chip: Chip, runs: number, warmup: number): number {
@@ -216,11 +224,11 @@ export default async function bench(): Promise<BenchRow[]> {
     },
     {
       what: 'what limits add to one width edited of 100 channels, junctions solved and their shapes known',
-      median: middle(limited) - middle(unlimited),
+      median: middle(limited.times) - middle(unlimited.times),
       unit: 'ms',
-      runs: limited.length,
+      runs: limited.times.length,
       target: 10,
-      note: `mean ${(mean(limited) - mean(unlimited)).toPrecision(3)} ms; the edit without limits ${middle(unlimited).toPrecision(3)} ms`,
+      note: `${(limited.processor - unlimited.processor).toPrecision(3)} ms of processor; the edit without limits ${unlimited.processor.toPrecision(3)} ms of processor`,
     },
     {
       what: '10,000 channels with three limits, chip to result from the beginning',

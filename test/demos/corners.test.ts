@@ -55,3 +55,18 @@ test('circulating cells: the dose decides with junctions solved too', () => {
   expect(result.junctions).toBe('solved');
   expect(result.limits.map(({ met }) => met)).toEqual([true, false]);
 });
+
+test('attached cells: the floor is uneven, starved in its corners and swept at its mouths, and still met', () => {
+  const drawn = read('attached-cells');
+  const within = (low: number, high: number): number => {
+    const limits = drawn.limits.map((limit) =>
+      'floor' in limit ? { ...limit, floor: [low, high] as const } : limit,
+    );
+    return solve({ ...drawn, limits }, COARSE).limits[0].worst!;
+  };
+  const [starved, met, swept] = [within(0, 0.05), within(0.05, 0.25), within(0.25, 1000)];
+  expect(starved + met + swept).toBeCloseTo(1, 9);
+  expect(starved).toBeGreaterThan(0.01);
+  expect(swept).toBeGreaterThan(0.001);
+  expect(met).toBeGreaterThan(0.9);
+});
