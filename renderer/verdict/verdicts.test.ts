@@ -85,9 +85,7 @@ describe('Does it split right?', () => {
       );
     expect(one(0)).toBe('Yes: well 1 is within 0.80 % of its target.');
     expect(one(0.004)).toBe('Yes: well 1 is within 0.80 %; making adds ± 0.40 %.');
-    expect(one(0.022)).toBe(
-      'Yes: well 1 is within 0.80 %; making adds ± 2.2 %, 2.0 % is allowed.',
-    );
+    expect(one(0.022)).toBe('Yes: well 1 is within 0.80 %; making adds ± 2.2 %, 2.0 % is allowed.');
     const targets = [
       { ...target('well 1', 0.5, 0.5, true), ...by(0.03) },
       { ...target('well 2', 0.5, 0.5, true), ...by(0.01) },
