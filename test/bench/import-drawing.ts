@@ -16,7 +16,20 @@ export function largeDxf(entities: number): string {
     const corners = [x, y, x + w, y, x + w, y + h, x, y + h];
     for (let i = 0; i < 4; i += 1) {
       const j = (2 * i + 2) % 8;
-      put(0, 'LINE', 8, 'FLOW', 10, corners[2 * i], 20, corners[2 * i + 1], 11, corners[j], 21, corners[j + 1]);
+      put(
+        0,
+        'LINE',
+        8,
+        'FLOW',
+        10,
+        corners[2 * i],
+        20,
+        corners[2 * i + 1],
+        11,
+        corners[j],
+        21,
+        corners[j + 1],
+      );
     }
     made += 4;
     if (k % 4 === 0) {

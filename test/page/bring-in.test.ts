@@ -24,8 +24,25 @@ async function noViolations(page: Page): Promise<void> {
 
 const DRAWING = dxf(
   [
-    ...outline([[2000, 6000], [30000, 6000], [30000, 2000], [30300, 2000], [30300, 6000], [60000, 6000], [60000, 6300], [2000, 6300]]),
-    ...outline([[0, 0], [70000, 0], [70000, 20000], [0, 20000]], 'OUTLINE'),
+    ...outline([
+      [2000, 6000],
+      [30000, 6000],
+      [30000, 2000],
+      [30300, 2000],
+      [30300, 6000],
+      [60000, 6000],
+      [60000, 6300],
+      [2000, 6300],
+    ]),
+    ...outline(
+      [
+        [0, 0],
+        [70000, 0],
+        [70000, 20000],
+        [0, 20000],
+      ],
+      'OUTLINE',
+    ),
     ...[0, 'TEXT', 8, 'NOTES', 10, 0, 20, 0, 40, 5, 1, 'a'],
   ],
   [],
@@ -85,15 +102,20 @@ test('a drawing is read, asked for its unit, found to be channels, put on the sh
     await page.keyboard.press('Enter');
     await page.getByRole('heading', { name: 'Bring in a drawing' }).waitFor();
     await page.getByLabel('A drawing to bring in').setInputFiles(join(folder, 'broken.dxf'));
-    await page.getByRole('alert').filter({ hasText: /line \d+/ }).waitFor();
+    await page
+      .getByRole('alert')
+      .filter({ hasText: /line \d+/ })
+      .waitFor();
     await page.getByLabel('A drawing to bring in').setInputFiles(join(folder, 'tee.dxf'));
     await page.getByRole('heading', { name: 'tee.dxf' }).waitFor();
     const find = page.getByRole('button', { name: 'Find channels' });
     await find.focus();
     await page.keyboard.press('Enter');
-    await page.getByRole('alert').filter({ hasText: /does not say what its numbers are in/ }).waitFor();
-    await page.getByLabel('One unit is').focus();
-    await page.keyboard.type('1 µm');
+    await page
+      .getByRole('alert')
+      .filter({ hasText: /does not say what its numbers are in/ })
+      .waitFor();
+    await page.getByLabel('One unit is').selectOption('um');
     await find.focus();
     await page.keyboard.press('Enter');
     const became = page.getByRole('region', { name: 'What became of it' });
@@ -110,7 +132,10 @@ test('a drawing is read, asked for its unit, found to be channels, put on the sh
     await inPlace.check();
     await page.getByRole('button', { name: 'Put on the sheet' }).focus();
     await page.keyboard.press('Enter');
-    await page.getByRole('alert').filter({ hasText: /It is on the sheet/ }).waitFor();
+    await page
+      .getByRole('alert')
+      .filter({ hasText: /It is on the sheet/ })
+      .waitFor();
     await answered(page);
     await page.getByRole('tab', { name: /Channels/i }).click();
     const ledger = page.locator('.ledger');
@@ -126,7 +151,8 @@ test('a drawing is read, asked for its unit, found to be channels, put on the sh
     const box = (await surface.boundingBox())!;
     await page.mouse.click(box.x + box.width * 0.4, box.y + box.height * 0.5);
     await page.mouse.click(box.x + box.width * 0.6, box.y + box.height * 0.5);
-    const width = async (): Promise<number> => Number.parseFloat(await page.getByLabel('Its width').inputValue());
+    const width = async (): Promise<number> =>
+      Number.parseFloat(await page.getByLabel('Its width').inputValue());
     const before = await width();
     const apart = page.getByLabel('They are apart by');
     const distance = Number.parseFloat(await apart.inputValue());

@@ -16,7 +16,8 @@ const SILENT = new Set(['defs', 'symbol', 'title', 'desc', 'metadata', 'style', 
 const SHAPES = new Set(['path', 'rect', 'circle', 'ellipse', 'line', 'polyline', 'polygon']);
 
 /** Names that programs give by themselves. */
-const GIVEN_NAMES = /^(path|rect|circle|ellipse|line|polyline|polygon|use|g|svg|text|image|layer|shape)?[-_]?\d/i;
+const GIVEN_NAMES =
+  /^(path|rect|circle|ellipse|line|polyline|polygon|use|g|svg|text|image|layer|shape)?[-_]?\d/i;
 /** Shapes with names of their own that are told apart; in drawings with more the groups' names say more. */
 const MOST_NAMED = 60;
 
