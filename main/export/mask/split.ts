@@ -107,11 +107,25 @@ function sides(paths: Paths64): Rect64[] {
       ];
 }
 
+/** Points that the place of a cut is chosen by. */
+const SAMPLE = 500;
+
 function cutAt(paths: Paths64, across: boolean): number {
   const along = ({ x, y }: { x: number; y: number }): number => (across ? x : y);
   const few = paths.length > 1 && paths.length <= 3;
-  const values = (few ? paths[1]! : paths.flat()).map(along);
-  if (few) return Math.round((Math.min(...values) + Math.max(...values)) / 2);
+  if (few) {
+    const values = paths[1]!.map(along);
+    return Math.round((Math.min(...values) + Math.max(...values)) / 2);
+  }
+  // of many points a sample tells the middle as well
+  const count = paths.reduce((sum, path) => sum + path.length, 0);
+  const stride = Math.ceil(count / SAMPLE);
+  const values: number[] = [];
+  let skip = 0;
+  for (const path of paths) {
+    for (; skip < path.length; skip += stride) values.push(along(path[skip]!));
+    skip -= path.length;
+  }
   values.sort((a, b) => a - b);
   const middle = values[values.length >> 1]!;
   // a cut along a wall would leave a sliver: between the middle point and the next one
