@@ -27,7 +27,12 @@ async function run(...argv: string[]): Promise<{ code: number; out: string; err:
   return { code: await main(argv, io), out, err };
 }
 
-const BOX = outline([[1000, 1000], [9000, 1000], [9000, 1100], [1000, 1100]]);
+const BOX = outline([
+  [1000, 1000],
+  [9000, 1000],
+  [9000, 1100],
+  [1000, 1100],
+]);
 
 function drawing(name: string, text: string): string {
   const path = join(folder, name);
@@ -58,7 +63,17 @@ test('layers and units as they are given', async () => {
   const silent = await run(file, '--depth', '50 um', '-o', out);
   expect([silent.code, existsSync(out)]).toEqual([2, false]);
   expect(silent.err).toMatch(/does not say what its numbers are in/);
-  const given = await run(file, '--depth', '50 um', '--unit', '10 nm', '--layer', 'FLOW=cavity:20um:deep', '-o', out);
+  const given = await run(
+    file,
+    '--depth',
+    '50 um',
+    '--unit',
+    '10 nm',
+    '--layer',
+    'FLOW=cavity:20um:deep',
+    '-o',
+    out,
+  );
   expect(given.code).toBe(0);
   const chip = readDescription(readFileSync(out, 'utf8'));
   expect(chip.layers.map(({ id, depth }) => [id, depth])).toEqual([['deep', 20_000]]);
@@ -70,7 +85,11 @@ test.each([
   ['no depth', ['a.dxf', '-o', 'x'], /has no depth/],
   ['no place', ['a.dxf', '--depth', '50 um'], /No place for the chip/],
   ['a depth without its unit', ['a.dxf', '--depth', '50', '-o', 'x'], /--depth takes a length/],
-  ['an unknown role', ['a.dxf', '--depth', '50 um', '-o', 'x', '--layer', 'A=water'], /--layer takes a layer/],
+  [
+    'an unknown role',
+    ['a.dxf', '--depth', '50 um', '-o', 'x', '--layer', 'A=water'],
+    /--layer takes a layer/,
+  ],
   ['an unknown option', ['a.dxf', '--width', '3'], /Unknown option/],
   ['no such file', ['none.dxf', '--depth', '50 um', '-o', 'x'], /cannot be read/],
 ])('%s: 2, in one message, nothing written', async (_, argv, says) => {

@@ -14,7 +14,7 @@ async function noViolations(page: Page): Promise<void> {
   await page.evaluate(AxeBuilder.source);
   const found = await page.evaluate(async () => {
     const { axe } = window as unknown as { axe: typeof import('axe-core') };
-    const { violations } = await axe.run(document, { resultTypes: ['violations'] });
+    const { violations } = await axe.run('.card', { resultTypes: ['violations'] });
     return violations.map(
       ({ id, nodes }) => `${id}: ${nodes.map((node) => node.html.slice(0, 160)).join(' | ')}`,
     );
