@@ -35,11 +35,13 @@ export function compare(
   );
   const bound = 2 * perimeter * (apart + offArc);
   if (bound <= allowed) return { difference: bound, allowed };
-  const wanted = shapes.flatMap((shape) => flatPaths(shape, chordError));
-  const found = loops.flatMap((loop) => flatPaths([loop], chordError));
-  // what the chords take off the arcs is known; what they and the file lie apart is looked at
-  const cut = shapes.reduce((sum, shape) => sum + chordLoss(shape, chordError), 0);
+  // the file's own arcs lose as much to chords as the drawing's: both are cut finer
   const curved = loops.some((loop) => loop.some(({ bulge }) => bulge !== 0));
+  const error = curved ? Math.max(1, chordError / 8) : chordError;
+  const wanted = shapes.flatMap((shape) => flatPaths(shape, error));
+  const found = loops.flatMap((loop) => flatPaths([loop], error));
+  // what the chords take off the arcs is known; what they and the file lie apart is looked at
+  const cut = shapes.reduce((sum, shape) => sum + chordLoss(shape, error), 0);
   const known = (curved ? 2 : 1) * cut + perimeter * (offArc + ROUNDING);
   return { difference: differenceOf(wanted, found) + known, allowed };
 }
