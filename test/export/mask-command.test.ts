@@ -101,6 +101,17 @@ describe('npm run mask', () => {
     expect(readdirSync(to).sort()).toEqual(['mine.gds', 'report.json']);
   });
 
+  test('every format and option of a demo reads back the same to the command too', async () => {
+    for (const more of [
+      ['--mirror'],
+      ['--shrink', '1 %', '--wafer', '200 mm'],
+      ['--pads', '--undercut', '5 um'],
+    ]) {
+      const { code, err } = await mask(BIG, '--format', 'dxf,gdsii,svg,pdf', '--out', to, ...more);
+      expect([code, err], more.join(' ')).toEqual([0, '']);
+    }
+  });
+
   test('several files take the name that was chosen', async () => {
     expect((await mask(DEMO, '--format', 'svg', '--format', 'dxf', '--out', join(to, 'plate.x'))).code).toBe(
       0,
