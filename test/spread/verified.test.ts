@@ -42,7 +42,8 @@ verify(
     quantity: 'spread: share of an inlet by the tolerance of its channel’s width',
     check: 'exact',
     at: 'two inlets of plates 1000 by 20 µm at one pressure, one width ± 1 %',
-    source: 's = g1/(g1 + g2) of two like conductances: ds/s = ½ dg/g, with dg/g of the section by differences',
+    source:
+      's = g1/(g1 + g2) of two like conductances: ds/s = ½ dg/g, with dg/g of the section by differences',
     tolerance: 1e-3,
   },
   () => {
@@ -68,7 +69,8 @@ verify(
     quantity: 'as built: pressure that restores an inlet’s half of the flow',
     check: 'exact',
     at: 'one of two inlet channels made 10 % wider, both outlets open',
-    source: 'equal flows need drops as the resistances: (b − p)/(a − p) = R_b/R_a by the section’s own conductance',
+    source:
+      'equal flows need drops as the resistances: (b − p)/(a − p) = R_b/R_a by the section’s own conductance',
     tolerance: 1e-4,
   },
   () => {
