@@ -69,7 +69,7 @@ export function scaledBy(
   return {
     ...underlay,
     scale: underlay.scale * factor,
-    x: first[0] - (first[0] - underlay.x) * factor,
-    y: first[1] - (first[1] - underlay.y) * factor,
+    x: Math.round(first[0] - (first[0] - underlay.x) * factor),
+    y: Math.round(first[1] - (first[1] - underlay.y) * factor),
   };
 }
