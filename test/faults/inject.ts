@@ -66,7 +66,10 @@ interface Scenario {
   /** Whether the place counts as one that cannot be trusted. */
   readonly place?: Place['kind'];
   /** Work before any step fails; returns what is to be done while one does. */
-  readonly prepare: (bench: Bench) => Promise<{
+  readonly prepare: (
+    bench: Bench,
+    once: boolean,
+  ) => Promise<{
     run: () => Promise<void>;
     /** Lets go of what is open, with nothing failing any more. */
     leave: () => Promise<void>;
@@ -118,16 +121,23 @@ export const SCENARIOS: readonly Scenario[] = [
   ...(['edit', 'undo', 'redo'] as const).map(
     (kind): Scenario => ({
       name: kind,
-      prepare: async (bench) => {
+      prepare: async (bench, once) => {
         const workplace = await opened(bench);
         const { project } = workplace;
         if (kind === 'redo') project.undo();
-        const next = random(9);
         const chips = [text(project.chip)];
+        const edit = randomEdit(project.chip, random(9));
+        let after = '';
+        if (kind === 'edit') after = text(applyEdit(project.chip, edit));
+        else {
+          project[kind]();
+          after = text(project.chip);
+          project[kind === 'undo' ? 'redo' : 'undo']();
+        }
         let acknowledged = false;
         return {
           run: async () => {
-            if (kind === 'edit') project.edit(randomEdit(project.chip, next), project.position.seq);
+            if (kind === 'edit') project.edit(edit, project.position.seq);
             else project[kind]();
             acknowledged = true;
             chips.push(text(project.chip));
@@ -137,7 +147,8 @@ export const SCENARIOS: readonly Scenario[] = [
             chips.push(text(project.chip));
             await workplace.close();
           },
-          allowed: () => (acknowledged ? chips.slice(1) : chips),
+          // Done, reported as failed, and nothing readable since: it is there when the file is opened again.
+          allowed: () => (acknowledged ? chips.slice(1) : once ? chips : [...chips, after]),
         };
       },
     }),
@@ -276,7 +287,7 @@ export async function injectInto(
         onTrouble: () => undefined,
         judge: async () => ({ kind }) as Place,
       };
-      const { run, leave, allowed } = await scenario.prepare({ folder: here, path, settings });
+      const { run, leave, allowed } = await scenario.prepare({ folder: here, path, settings }, plan.once);
       const { reached, error } = await failing({ ...plan, k }, run);
       const label = `${scenario.name}: step ${k} ${plan.when}, ${plan.once ? 'once' : 'for ever'}, ${plan.code}`;
       count.runs += 1;
