@@ -8,17 +8,20 @@ export interface Reading {
   readonly doubt: number;
 }
 
-/** Samples between two Gauss points when looking for the peak. */
+/** Samples between two Gauss points when looking for the peak, on a wall of few and of many of them. */
 const SAMPLES = 12;
+const MANY = 400;
+const SAMPLES_OF_MANY = 2;
 
 export function peakOf(curve: WallCurve): Reading {
+  const samples = curve.s.length > MANY ? SAMPLES_OF_MANY : SAMPLES;
   let best: Reading = { shear: -1, at: [0, 0], doubt: 0 };
   for (let i = 0; i < curve.ends.length; i += 1) {
     const stretch = extended(curve, i);
     const { s } = stretch;
     for (let k = 0; k + 1 < s.length; k += 1) {
-      for (let j = 0; j <= SAMPLES; j += 1) {
-        const at = s[k] + ((s[k + 1] - s[k]) * j) / SAMPLES;
+      for (let j = 0; j <= samples; j += 1) {
+        const at = s[k] + ((s[k + 1] - s[k]) * j) / samples;
         if (at < curve.from[i] || at > curve.to[i]) continue;
         const shear = interpolate(stretch, stretch.shear, at);
         if (shear > best.shear) best = { shear, at: placeAt(stretch, at), doubt: doubtAt(stretch, at) };

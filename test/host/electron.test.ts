@@ -30,7 +30,7 @@ afterEach(() => {
 });
 
 const until = async (done: () => boolean): Promise<void> => {
-  for (let round = 0; round < 300 && !done(); round += 1) await wait(20);
+  for (let round = 0; round < 1_500 && !done(); round += 1) await wait(20);
   expect(done()).toBe(true);
 };
 
