@@ -97,15 +97,22 @@ interface Sample {
 
 /** The nodes nearest to the top one, with their images behind a mirror line x = 0. */
 function nearest(mesh: Mesh, u: Float64Array, cx: number, cy: number, symmetric: boolean): Sample[] {
+  const wanted = Math.max(TERMS + 3, PATCH);
+  /** Nearest first, never more than wanted. */
   const samples: Sample[] = [];
+  const take = (x: number, y: number, value: number): void => {
+    const distance = Math.hypot(x - cx, y - cy);
+    let place = samples.length;
+    while (place > 0 && samples[place - 1].distance > distance) place -= 1;
+    if (place === wanted) return;
+    samples.splice(place, 0, { x, y, value, distance });
+    if (samples.length > wanted) samples.pop();
+  };
   for (let i = 0; i < mesh.nodeCount; i += 1) {
-    const y = mesh.y[i];
-    for (const x of symmetric && mesh.x[i] > 0 ? [mesh.x[i], -mesh.x[i]] : [mesh.x[i]]) {
-      samples.push({ x, y, value: u[i], distance: Math.hypot(x - cx, y - cy) });
-    }
+    take(mesh.x[i], mesh.y[i], u[i]);
+    if (symmetric && mesh.x[i] > 0) take(-mesh.x[i], mesh.y[i], u[i]);
   }
-  samples.sort((a, b) => a.distance - b.distance);
-  return samples.slice(0, Math.max(TERMS + 3, Math.min(PATCH, samples.length)));
+  return samples;
 }
 
 /** Cholesky solution of the small normal equations, in place; a trace on the diagonal keeps it definite. */

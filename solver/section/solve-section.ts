@@ -18,6 +18,7 @@ const shearAsked = (accuracy: number): number =>
 /** Mesh size over hydraulic diameter, and at most over depth, that mostly serves for 0.1 %. */
 const FIRST_SIZE = 0.19;
 const FIRST_SIZE_OF_DEPTH = 0.28;
+const MEASURED_GROWTH = 0.5;
 const ROUNDS = 8;
 const MOST_TRIANGLES = 60_000;
 /** Rounds for the shears alone; what is then left is told in `shearError`, not refined for ever. */
@@ -73,7 +74,9 @@ export function sectionMesh(shape: SectionShape, size: number, perQuarter: numbe
     ...shape.reentrant.map(([x, y]) => ({ x, y, size: 0.03 * size })),
   ];
   try {
-    const mesh = meshShape(shape.shape, { size, perQuarter, points }, where);
+    // A measured wall has more edges than its flow asks for: the mesh leaves them behind fast.
+    const growth = shape.averaged > 0 ? { growth: MEASURED_GROWTH } : {};
+    const mesh = meshShape(shape.shape, { size, perQuarter, points, ...growth }, where);
     if (shape.stretch !== 1) for (let i = 0; i < mesh.nodeCount; i += 1) mesh.x[i] *= shape.stretch;
     return mesh;
   } catch (error) {
