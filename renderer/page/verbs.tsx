@@ -12,7 +12,7 @@ export function Verbs() {
   const overlay = useStore(desk.view, (view) => view.overlay);
   const more = SHOWN.some((name) => name === tool) ? [] : [tool];
   return (
-    <div className="verbs">
+    <nav className="verbs" aria-label="Tools and overlays">
       <div role="toolbar" aria-label="Tools">
         {[...SHOWN, ...more].map((name) => {
           const command = commands.byId(`tool ${name}`);
@@ -44,7 +44,7 @@ export function Verbs() {
           </button>
         ))}
       </div>
-    </div>
+    </nav>
   );
 }
 

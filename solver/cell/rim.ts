@@ -13,8 +13,8 @@ import type { CellShape } from './shape.ts';
  */
 const ENTRY = 1.5;
 const LAYER = 0.55 * 12;
-/** Share of what is added that is not trusted. */
-const DOUBT = 0.5;
+/** Share of what is added that is not trusted: about twice what the tetrahedra differed by. */
+const DOUBT = 0.3;
 
 /** Resistance in series at each face, per viscosity; 0 where there is no hole. In the shape's unit. */
 export function holeResistances({ loops, faces, depth }: CellShape): Float64Array {
