@@ -8,7 +8,7 @@ import type { Desk } from '../state/desk.ts';
 import { shownAnswer } from '../state/live.ts';
 import type { Workbench } from '../state/workbench.ts';
 import { Bodies } from './bodies.ts';
-import { toScreen } from './camera.ts';
+import { inView, toScreen } from './camera.ts';
 import { CellArt } from './cell-art.ts';
 import { drawChannelWords } from './channel-words.ts';
 import { drawEdge, drawScaleBar, takeEdge } from './edge.ts';
@@ -88,10 +88,18 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
   };
 
   const art = new CellArt(desk, () => painter.redraw('chip'));
+  let told: View | null = null;
+  /** The solving thread hears what is on screen, once for each view. */
+  const tellView = (camera: View['camera'], size: View['size']): void => {
+    if (told?.camera === camera && told.size === size) return;
+    told = { camera, size };
+    desk.solver.look(inView(camera, size));
+  };
   const painter = createPainter(container, desk.view.get().size, {
     chip: (ctx) =>
       frame((d, { camera, size }) => {
         const look = palette();
+        tellView(camera, size);
         ctx.fillStyle = look.sheet;
         ctx.fillRect(0, 0, size.width, size.height);
         drawEdge(ctx, d.chip, camera, size, look);

@@ -21,8 +21,18 @@ export type Order =
   | { readonly kind: 'cancel'; readonly id: number }
   /** What is to be drawn inside a solved junction, with the flows of the newest answer. */
   | { readonly kind: 'picture'; readonly id: number; readonly cell: string; readonly lines: number }
+  /** The part of the plan that is on screen, nm: its junctions come first. */
+  | { readonly kind: 'look'; readonly box: PlanBox }
   /** Solved junctions that the project had kept, in answer to 'want'. */
   | { readonly kind: 'kept'; readonly cells: readonly KeptCell[] };
+
+/** A part of the plan, nm. */
+export interface PlanBox {
+  readonly left: number;
+  readonly right: number;
+  readonly bottom: number;
+  readonly top: number;
+}
 
 /** A solved junction as the project keeps it. */
 export interface KeptCell {

@@ -4,7 +4,7 @@ import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { SolveOptions } from '../../solver/solve.ts';
 import { createStore, type Store } from '../state/store.ts';
-import type { KeptCell, News, Order, Outcome, PlacedPicture, Refused } from './messages.ts';
+import type { KeptCell, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 
 /** The newest answer and what it is of. */
 export interface Solved {
@@ -62,6 +62,8 @@ export interface Solver {
   sweep(edits: readonly ChipEdit[], each: (index: number, outcome: Outcome) => void): () => void;
   /** What is to be drawn inside a solved junction; null where it is not solved (any more). */
   picture(cell: string, lines: number): Promise<PlacedPicture | null>;
+  /** What is on screen: its junctions are solved before the others. */
+  look(box: PlanBox): void;
   end(): void;
 }
 
@@ -200,6 +202,7 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
         thread.post({ kind: 'picture', id, cell, lines });
       });
     },
+    look: (box) => thread.post({ kind: 'look', box }),
     end: () => thread.end(),
   };
 }

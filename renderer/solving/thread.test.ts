@@ -120,3 +120,20 @@ test('a drag that makes no chip is passed over', () => {
   expect(settle()).toBe(true);
   expect(of('dragged')).toEqual([]);
 });
+
+test('junctions on screen are handed out before the others', () => {
+  const names = (look: boolean): string[] => {
+    const { order, settle, handed } = bench();
+    if (look) order({ kind: 'look', box: { left: 19e6, right: 21e6, bottom: 5e6, top: 7e6 } });
+    order({ kind: 'load', id: 1, chip: teeChip(), options: {} });
+    expect(settle()).toBe(true);
+    return handed[0]!.cells.map(({ name }) => name);
+  };
+  const drawn = names(false);
+  const seen = names(true);
+  // The lower bend, at 20, 6 mm, is the only one in view.
+  expect(seen[0]).not.toBe(drawn[0]);
+  expect(seen[0]).toMatch(/^bend/);
+  expect([...seen].sort()).toEqual([...drawn].sort());
+  expect(seen.slice(1)).toEqual(drawn.filter((name) => name !== seen[0]));
+});

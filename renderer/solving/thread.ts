@@ -12,7 +12,7 @@ import { knownSolution, settleWaiting } from '../../solver/lump/cells.ts';
 import { emptyMemory } from '../../solver/memory.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { accuracyOf, type SolveOptions, solve } from '../../solver/solve.ts';
-import type { Answered, News, Order, Outcome, PlacedPicture, Refused } from './messages.ts';
+import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 
 /** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
 export interface CellHand {
@@ -52,6 +52,7 @@ export function solvingThread(
   let dragDue = false;
   let drag: { readonly id: number; readonly chip: Chip } | null = null;
   let sent: Graph | null = null;
+  let look: PlanBox | null = null;
   /** What pictures are drawn of: the chip answered last. */
   let last: { readonly chip: Chip; readonly result: Result } | null = null;
   /** The newest chip has no result, whatever its junctions are. */
@@ -72,6 +73,15 @@ export function solvingThread(
     }
   };
 
+  /** What is on screen before what is not, each in drawing order. */
+  const seenFirst = (waiting: readonly CellSpec[]): readonly CellSpec[] => {
+    if (!look) return waiting;
+    const { left, right, bottom, top } = look;
+    const seen = ({ origin: [x, y] }: CellSpec): boolean =>
+      x >= left && x <= right && y >= bottom && y <= top;
+    return [...waiting.filter(seen), ...waiting.filter((cell) => !seen(cell))];
+  };
+
   /** First the project is asked for what it kept, then what it has not is solved. */
   const handOn = (waiting: readonly CellSpec[]): void => {
     if (!hand) return;
@@ -82,7 +92,7 @@ export function solvingThread(
       tell({ kind: 'want', keys: fresh });
     }
     // Anew each time: one that came may have been a copy of others.
-    if (open === 0) hand.solve(waiting, accuracyOf(options));
+    if (open === 0) hand.solve(seenFirst(waiting), accuracyOf(options));
   };
 
   /** Solves a chip in haste and sends it; what its junctions still wait for. */
@@ -162,6 +172,9 @@ export function solvingThread(
     switch (order.kind) {
       case 'picture':
         return tell({ kind: 'pictured', id: order.id, picture: pictureOf(order.cell, order.lines) });
+      case 'look':
+        look = order.box;
+        return;
       case 'kept':
         open -= 1;
         for (const { key, bytes } of order.cells) {
