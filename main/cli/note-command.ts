@@ -1,9 +1,9 @@
 import { readFile } from 'node:fs/promises';
 import type { Result } from '../../solver/chip/result.ts';
 import { Problem } from '../../solver/problem/problem.ts';
-import { solve } from '../../solver/solve.ts';
 import { type Documents, noteFiles, splitFile } from '../export/note/documents.ts';
 import { type Output, writeFiles } from '../export/write-files.ts';
+import { solveChip } from '../solving/solve-chip.ts';
 import { NOTE_USAGE, type NoteCall, noteCall, splitFormat } from './note-options.ts';
 import { readChipFile } from './read-chip.ts';
 import { allMet } from './report.ts';
@@ -63,7 +63,7 @@ export async function programName(): Promise<string> {
 
 async function run(call: NoteCall, io: Io): Promise<number> {
   const chip = await readChipFile(call.file);
-  const result = await solve(chip, call.solve);
+  const result = await solveChip(chip, call.solve);
   const all: Documents = { chip, result, paper: call.paper, program: await programName(), date: new Date() };
   const outputs = await made(all, call);
   const files = outputs.filter(({ path }) => path !== '-');

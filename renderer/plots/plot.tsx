@@ -16,9 +16,14 @@ export interface PlotProps {
   readonly says: string;
 }
 
+/** ms in which a change of size, which the library waits 100 ms with, is surely drawn too. */
+const RESIZED = 1000;
+
 /** One plot in the page's own type and colours. */
 export function Plot({ title, data, across, up, limits = [], more, says }: PlotProps) {
   const surface = useRef<HTMLDivElement>(null);
+  /** Ends when what was begun to be drawn is drawn: margins are found in further rounds. */
+  const drawing = useRef<Promise<unknown>>(Promise.resolve());
   const [, again] = useReducer((n: number) => n + 1, 0);
   useEffect(() => onTheme(again), []);
   useEffect(() => {
@@ -31,7 +36,7 @@ export function Plot({ title, data, across, up, limits = [], more, says }: PlotP
       ticks: 'outside' as const,
       automargin: true,
     };
-    void Plotly.react(
+    drawing.current = Plotly.react(
       surface.current!,
       [...data],
       {
@@ -69,7 +74,13 @@ export function Plot({ title, data, across, up, limits = [], more, says }: PlotP
   });
   useEffect(() => {
     const element = surface.current!;
-    return () => Plotly.purge(element);
+    // Taken away only when drawn: the rounds still to come look at what purging takes.
+    return () => {
+      const purge = (): void => {
+        setTimeout(() => Plotly.purge(element), RESIZED);
+      };
+      void drawing.current.then(purge, purge);
+    };
   }, []);
   return (
     <figure className="plot">
