@@ -2,7 +2,7 @@ import { Worker } from 'node:worker_threads';
 import { Problem } from '../../solver/problem/problem.ts';
 import type { EventData } from '../contract/contract.ts';
 import { checkFree } from '../export/mask/places.ts';
-import { splitTable } from '../export/note/flow.ts';
+import { splitTable } from '../export/note/split.ts';
 import { tableTabbed } from '../export/note/tables.ts';
 import { writeFiles } from '../export/write-files.ts';
 import { refusal } from '../session/refusal.ts';

@@ -16,10 +16,12 @@ import {
   unbroken,
 } from './blocks.ts';
 import { type Paper, planPicture, size } from './drawing.ts';
-import { driftTable, drivesTable, routesSection, splitTable, splitWords, startWords } from './flow.ts';
+import { driftTable, drivesTable, startWords } from './drives.ts';
 import { channelsSection, channelsTable, layersTable, portsTable, processBlocks } from './making.ts';
 import type { Picture } from './picture.ts';
+import { routesSection } from './routes.ts';
 import { sectionPicture } from './section-picture.ts';
+import { splitTable, splitWords } from './split.ts';
 import {
   cautionsSection,
   fluidWords,

@@ -3,10 +3,10 @@ import type { Result } from '../../../solver/chip/result.ts';
 import type { NoteFormat } from '../../contract/note.ts';
 import type { Output } from '../write-files.ts';
 import { type Note, type NoteOptions, noteOf, splitNote, tablesOf } from './content.ts';
-import { splitTable } from './flow.ts';
 import { noteHtml } from './html.ts';
 import { notePdf, paperOf } from './pdf.ts';
 import type { PaperName } from './pdf-page.ts';
+import { splitTable } from './split.ts';
 import { csvPath, tableCsv } from './tables.ts';
 
 export interface Documents {
