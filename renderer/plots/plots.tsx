@@ -1,8 +1,8 @@
-import { useState } from 'react';
+import { useEffect, useReducer, useState } from 'react';
 import { inUnit } from '../../solver/chip/units.ts';
 import { unitInPrint } from '../../solver/chip/units-format.ts';
 import { ChoiceField } from '../card/text-field.tsx';
-import { palette } from '../look/theme.ts';
+import { onTheme, palette } from '../look/theme.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import { figure, unitFor } from '../words/figure.ts';
@@ -14,6 +14,9 @@ import { SweepPlots } from './sweep.tsx';
 export default function Plots() {
   const { desk } = usePage();
   const { result } = useStore(desk.solver.solved);
+  // Lines are in the colours of the scheme: drawn anew when it changes.
+  const [, again] = useReducer((n: number) => n + 1, 0);
+  useEffect(() => onTheme(again), []);
   if (!result) return <p className="soft">Plots come with the first answer.</p>;
   return (
     <>
