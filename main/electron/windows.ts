@@ -19,6 +19,8 @@ interface Open {
   readonly window: BrowserWindow;
   readonly name: string;
   standing: Standing | null;
+  /** File on its way into the window: until it stands there, or can't, the window is not free for another. */
+  coming: string | null;
 }
 
 /** The ground behind the page before it is drawn. */
@@ -74,7 +76,7 @@ export class Windows {
       },
     });
     this.#count += 1;
-    const open: Open = { window, name: `window-${process.pid}-${this.#count}`, standing: null };
+    const open: Open = { window, name: `window-${process.pid}-${this.#count}`, standing: null, coming: null };
     const contents = window.webContents.id;
     this.#open.set(contents, open);
     const { sessions } = this.#settings;
@@ -82,6 +84,7 @@ export class Windows {
       if (window.isDestroyed()) return;
       window.webContents.send(EVENT_CHANNEL, name, data);
       if (name === 'project') this.#stand(open, JSON.parse(data) as Standing);
+      if (name === 'opened' || name === 'problem') open.coming = null;
     });
     keepFrame(window, this.#settings.userData);
     window.once('ready-to-show', () => {
@@ -100,6 +103,7 @@ export class Windows {
       if (!window.isDestroyed()) window.webContents.reload();
     });
     if (file !== undefined) {
+      open.coming = file;
       // The page must listen before it can hear of what was opened.
       window.webContents.once('did-finish-load', () => sessions.open(open.name, file));
     }
@@ -109,10 +113,11 @@ export class Windows {
   /** Opens a file: in the window that has it, else in one that holds nothing yet, else in a new one. */
   async openFile(file: string): Promise<void> {
     const all = [...this.#open.values()];
-    const there = all.find(({ standing }) => standing?.path === file);
+    const there = all.find(({ standing, coming }) => (coming ?? standing?.path) === file);
     if (there) return bringUp(there.window);
-    const free = all.find(({ standing }) => standing === null);
+    const free = all.find(({ standing, coming }) => standing === null && coming === null);
     if (!free) return await this.make(file);
+    free.coming = file;
     bringUp(free.window);
     this.#settings.sessions.open(free.name, file);
   }

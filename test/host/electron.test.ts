@@ -326,6 +326,17 @@ test('a second start hands its file over; a file that is open comes to the front
   });
 });
 
+test('files that come at once each have a window, also while the first is still on its way into its own', async () => {
+  await withDesktop(async ({ folder, noted, electron }) => {
+    const files = ['a.chw', 'b.chw'].map((name) => join(folder, name));
+    for (const path of files) makeFile(path, madeUpChip(2), { program: 'test' });
+    // The empty window takes one of them; a file named twice is opened once.
+    electron.app.emit('second-instance', {}, ['electron', folder, ...files, files[0]], folder);
+    await until(() => noted.windows.length === 2 && noted.windows.every(opened));
+    expect(noted.windows.map((window) => window.represented).sort()).toEqual(files);
+  });
+});
+
 test('where the program runs already, a second one only hands over and goes', async () => {
   await withDesktop(
     async ({ noted }) => {
