@@ -3,7 +3,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import AxeBuilder from 'axe-core';
 import type { Page } from 'playwright-core';
-import { expect, test } from 'vitest';
+import { expect, test, vi } from 'vitest';
 import { answered, placeOnPage, sit } from './desk.ts';
 import { EVERYTHING } from './everything.ts';
 
@@ -100,8 +100,10 @@ test('motion only where it is allowed; forced colours; every panel, light and da
     await page.waitForTimeout(400);
     expect((await picture(page)) === still, 'at rest').toBe(true);
     await page.emulateMedia({ reducedMotion: 'no-preference' });
-    await page.waitForTimeout(400);
-    expect((await picture(page)) === still, 'moving').toBe(false);
+    await vi.waitFor(async () => expect((await picture(page)) === still, 'moving').toBe(false), {
+      timeout: 20_000,
+      interval: 100,
+    });
     await page.emulateMedia({ reducedMotion: 'reduce' });
     for (const colorScheme of ['light', 'dark'] as const) {
       await page.emulateMedia({ colorScheme });
