@@ -4,14 +4,21 @@ import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import { CellInput } from './cell-input.tsx';
 import { editCell } from './edit-cell.ts';
+import { fittedWidths, layoutOf, rowHeight } from './layout.ts';
+import { canvasMeasure } from './measure.ts';
 import { cellText, headText, type Order, type Row, type Table, writingOf } from './table.ts';
 
-export const ROW = 24;
+/** px: a row of one line. */
+const ROW = 24;
 const MORE = 6;
+/** px: to the left and right of the table. */
+const EDGE = 24;
 
 export interface GridProps {
   readonly label: string;
   readonly table: Table;
+  /** Indices of the columns to show, in their order. */
+  readonly shown: readonly number[];
   /** Filtered and in order. */
   readonly rows: readonly Row[];
   readonly order: Order | null;
@@ -22,30 +29,41 @@ export interface GridProps {
  * A table as an ARIA grid with one tab stop: arrows move the cell at hand, Enter edits or chooses, Space
  * chooses. Only rows in view are in the page, however many there are.
  */
-export function Grid({ label, table, rows, order, onOrder }: GridProps) {
+export function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
   const { desk, commands } = usePage();
   const id = useId();
   const selection = useStore(desk.view, (view) => view.selection);
   const [at, setAt] = useState({ row: 0, column: 0 });
   const [editing, setEditing] = useState<{ text: string; fault: string } | null>(null);
   const [top, setTop] = useState(0);
-  const [high, setHigh] = useState(240);
+  const [size, setSize] = useState({ wide: 0, high: 240 });
+  const [measure, setMeasure] = useState(canvasMeasure);
   const grid = useRef<HTMLDivElement>(null);
-  const { columns } = table;
-  const writings = useMemo(
-    () => columns.map((column, i) => writingOf(column, table.rows, i)),
-    [columns, table.rows],
+  const { high } = size;
+  const columns = useMemo(() => shown.map((i) => table.columns[i]!), [table, shown]);
+  const writings = useMemo(() => table.columns.map((column, i) => writingOf(column, table.rows, i)), [table]);
+  const layout = useMemo(() => layoutOf(table, shown, writings, measure), [table, shown, writings, measure]);
+  const widths = useMemo(() => fittedWidths(table, layout, size.wide - 2 * EDGE), [table, layout, size.wide]);
+  const tall = useMemo(
+    () => rowHeight(table, layout, widths, measure, ROW),
+    [table, layout, widths, measure],
   );
-  const template = columns
-    .map((column) => `minmax(${Math.round(column.wide * 0.72)}px, ${column.wide}fr)`)
-    .join(' ');
+  const template = widths.map((width) => `${width.toFixed(2)}px`).join(' ');
+  const wide = `${widths.reduce((sum, width) => sum + width, 0).toFixed(2)}px`;
   const chosen = useMemo(() => new Set(selection), [selection]);
 
   useEffect(() => {
     const element = grid.current!;
-    const watch = new ResizeObserver(() => setHigh(element.clientHeight));
+    const watch = new ResizeObserver(() =>
+      setSize({ wide: element.clientWidth, high: element.clientHeight }),
+    );
     watch.observe(element);
     return () => watch.disconnect();
+  }, []);
+  useEffect(() => {
+    // a face that came later has other widths
+    if (document.fonts.status !== 'loaded')
+      void document.fonts.ready.then(() => setMeasure(() => canvasMeasure()));
   }, []);
 
   // what is chosen on the sheet comes into view here
@@ -59,15 +77,18 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
     const element = grid.current;
     if (index < 0 || !element) return;
     setAt((now) => ({ ...now, row: index }));
-    const y = index * ROW;
-    if (y < element.scrollTop || y + 2 * ROW > element.scrollTop + element.clientHeight)
+    const y = index * tall;
+    if (y < element.scrollTop || y + tall + ROW > element.scrollTop + element.clientHeight)
       element.scrollTo({ top: Math.max(0, y - element.clientHeight / 2) });
-  }, [selection, rows]);
+  }, [selection, rows, tall]);
 
   const row = Math.min(at.row, rows.length - 1);
-  const first = Math.max(0, Math.floor(top / ROW) - MORE);
-  const last = Math.min(rows.length, Math.ceil((top + high) / ROW) + MORE);
-  const column = columns[at.column];
+  const first = Math.max(0, Math.floor(top / tall) - MORE);
+  const last = Math.min(rows.length, Math.ceil((top + high) / tall) + MORE);
+  const place = Math.min(at.column, columns.length - 1);
+  const column = columns[place];
+  /** Of the table's own columns. */
+  const index = shown[place] ?? 0;
   const cellId = (r: number, c: number): string => `${id}-${r}-${c}`;
 
   const go = (r: number, c: number): void => {
@@ -77,13 +98,16 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
     };
     setAt(next);
     const element = grid.current!;
-    const y = Math.max(0, next.row) * ROW;
-    if (y < element.scrollTop) element.scrollTo({ top: y });
-    else if (y + 2 * ROW > element.scrollTop + element.clientHeight)
-      element.scrollTo({ top: y + 2 * ROW - element.clientHeight });
+    const y = Math.max(0, next.row) * tall;
+    const below = y + tall + ROW - element.clientHeight;
+    const top = y < element.scrollTop ? y : Math.max(below, element.scrollTop);
+    const before = EDGE + widths.slice(0, next.column).reduce((sum, width) => sum + width, 0);
+    const after = before + widths[next.column]! - element.clientWidth;
+    const left = before < element.scrollLeft + EDGE ? before - EDGE : Math.max(after, element.scrollLeft);
+    element.scrollTo({ top, left });
   };
-  const choose = (index: number, add: boolean): void => {
-    const ref = rows[index]?.ref;
+  const choose = (r: number, add: boolean): void => {
+    const ref = rows[r]?.ref;
     if (!ref || ref === 'chip') return;
     if (add)
       desk.view.patch({
@@ -94,37 +118,38 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
     else commands.show(ref);
   };
   const turn = (c: number): void => {
-    const own = columns[c]!.id;
-    if (order?.column !== own) onOrder({ column: own, down: typeof table.rows[0]?.cells[c] === 'number' });
-    else if (order.down === (typeof table.rows[0]?.cells[c] === 'number'))
-      onOrder({ column: own, down: !order.down });
+    const { id: own, kind } = columns[c]!;
+    // numbers the largest first
+    const down = kind !== undefined;
+    if (order?.column !== own) onOrder({ column: own, down });
+    else if (order.down === down) onOrder({ column: own, down: !down });
     else onOrder(null);
   };
   const edit = (text?: string): void => {
-    const cell = rows[row]?.cells[at.column];
+    const cell = rows[row]?.cells[index];
     const own =
       typeof cell === 'number'
-        ? String(Number(inUnit(cell, writings[at.column]!.unit).toPrecision(12)))
+        ? String(Number(inUnit(cell, writings[index]!.unit).toPrecision(12)))
         : (cell ?? '');
     setEditing({ text: text ?? own, fault: '' });
   };
   const finish = (): void => {
     if (!editing || !column || !rows[row]) return;
-    const fault = editCell(desk, rows[row].ref, column, editing.text, writings[at.column]!.unit);
+    const fault = editCell(desk, rows[row].ref, column, editing.text, writings[index]!.unit);
     setEditing(fault ? { ...editing, fault } : null);
     if (!fault) grid.current?.focus();
   };
 
   const keys = (event: React.KeyboardEvent): void => {
     if (editing || event.altKey) return;
-    const far = Math.max(1, Math.floor(high / ROW) - 2);
+    const far = Math.max(1, Math.floor(high / tall) - 2);
     const moves: Readonly<Record<string, readonly [number, number]>> = {
-      ArrowUp: [at.row - 1, at.column],
-      ArrowDown: [at.row + 1, at.column],
-      ArrowLeft: [at.row, at.column - 1],
-      ArrowRight: [at.row, at.column + 1],
-      PageUp: [Math.max(0, at.row - far), at.column],
-      PageDown: [at.row + far, at.column],
+      ArrowUp: [at.row - 1, place],
+      ArrowDown: [at.row + 1, place],
+      ArrowLeft: [at.row, place - 1],
+      ArrowRight: [at.row, place + 1],
+      PageUp: [Math.max(0, at.row - far), place],
+      PageDown: [at.row + far, place],
       Home: [event.ctrlKey ? 0 : at.row, 0],
       End: [event.ctrlKey ? rows.length - 1 : at.row, columns.length - 1],
     };
@@ -132,7 +157,7 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
     const mod = event.ctrlKey || event.metaKey;
     if (move && (!mod || event.key === 'Home' || event.key === 'End')) go(...move);
     else if (event.key === 'Enter' || event.key === 'F2') {
-      if (at.row < 0) turn(at.column);
+      if (at.row < 0) turn(place);
       else if (column?.edits) edit();
       else choose(row, false);
     } else if (event.key === ' ') choose(row, event.shiftKey || mod);
@@ -153,14 +178,17 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
       aria-colcount={columns.length}
       aria-multiselectable="true"
       tabIndex={0}
-      aria-activedescendant={
-        rows.length > 0 || at.row < 0 ? cellId(at.row < 0 ? -1 : row, at.column) : undefined
-      }
+      aria-activedescendant={rows.length > 0 || at.row < 0 ? cellId(at.row < 0 ? -1 : row, place) : undefined}
       onScroll={(event) => setTop(event.currentTarget.scrollTop)}
       onKeyDown={keys}
     >
       {/* biome-ignore lint/a11y/useFocusableInteractive lint/a11y/useSemanticElements: the grid has the focus */}
-      <div className="grid-head" role="row" aria-rowindex={1} style={{ gridTemplateColumns: template }}>
+      <div
+        className="grid-head"
+        role="row"
+        aria-rowindex={1}
+        style={{ gridTemplateColumns: template, width: wide }}
+      >
         {columns.map((head, c) => (
           // biome-ignore lint/a11y/useFocusableInteractive lint/a11y/useSemanticElements lint/a11y/useKeyWithClickEvents: the grid has the focus and the keys
           <div
@@ -169,18 +197,18 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
             role="columnheader"
             aria-colindex={c + 1}
             aria-sort={order?.column === head.id ? (order.down ? 'descending' : 'ascending') : 'none'}
-            className={`${head.kind ? 'number' : ''}${at.row < 0 && at.column === c ? ' at' : ''}`}
+            className={`${head.kind ? 'number' : ''}${at.row < 0 && place === c ? ' at' : ''}`}
             onClick={() => turn(c)}
           >
-            {headText(head, writings[c]!)}
+            {headText(head, writings[shown[c]!]!)}
             {order?.column === head.id && <span aria-hidden="true">{order.down ? ' ↓' : ' ↑'}</span>}
           </div>
         ))}
       </div>
       {/* biome-ignore lint/a11y/useSemanticElements: a table element cannot be windowed */}
-      <div className="grid-body" role="rowgroup" style={{ height: `${rows.length * ROW}px` }}>
-        {rows.slice(first, last).map((entry, i) => {
-          const r = first + i;
+      <div className="grid-body" role="rowgroup" style={{ height: `${rows.length * tall}px`, width: wide }}>
+        {rows.slice(first, last).map((entry, nth) => {
+          const r = first + nth;
           return (
             // biome-ignore lint/a11y/useFocusableInteractive lint/a11y/useSemanticElements lint/a11y/useKeyWithClickEvents: the grid has the focus and the keys
             <div
@@ -189,12 +217,17 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
               aria-rowindex={r + 2}
               aria-selected={chosen.has(entry.ref)}
               className="grid-row"
-              style={{ gridTemplateColumns: template, transform: `translateY(${r * ROW}px)` }}
+              style={{
+                gridTemplateColumns: template,
+                height: `${tall}px`,
+                transform: `translateY(${r * tall}px)`,
+              }}
               onClick={(event) => choose(r, event.shiftKey || event.ctrlKey || event.metaKey)}
             >
               {columns.map((own, c) => {
-                const here = r === row && c === at.column && at.row >= 0;
-                const text = cellText(entry.cells[c], own, writings[c]!);
+                const i = shown[c]!;
+                const here = r === row && c === place && at.row >= 0;
+                const text = cellText(entry.cells[i], own, writings[i]!);
                 return (
                   // biome-ignore lint/a11y/useFocusableInteractive lint/a11y/useSemanticElements lint/a11y/useKeyWithClickEvents: the grid has the focus and the keys
                   <div
@@ -204,7 +237,7 @@ export function Grid({ label, table, rows, order, onOrder }: GridProps) {
                     aria-colindex={c + 1}
                     aria-readonly={!own.edits}
                     title={!own.kind && text.length > 18 ? text : undefined}
-                    className={`${own.kind ? 'number' : ''}${here ? ' at' : ''}${entry.missed?.includes(c) ? ' alarm' : ''}${own.edits ? ' edits' : ''}`}
+                    className={`${own.kind ? 'number' : own.sentence ? 'sentence' : ''}${here ? ' at' : ''}${entry.missed?.includes(i) ? ' alarm' : ''}${own.edits ? ' edits' : ''}`}
                     onClick={() => setAt({ row: r, column: c })}
                     onDoubleClick={() => own.edits && edit()}
                   >

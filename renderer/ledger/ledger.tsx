@@ -4,6 +4,7 @@ import { useStore } from '../state/store.ts';
 import { TABS, type Tab } from '../state/view.ts';
 import { capital, counted } from '../words/figure.ts';
 import { Grid } from './grid.tsx';
+import { columnsShown } from './layout.ts';
 import { filtered, type Order, ordered, tsvOf } from './table.ts';
 import { countOf, tableOf } from './tables.ts';
 
@@ -16,11 +17,14 @@ export function Ledger() {
   const [words, setWords] = useState('');
   const [orders, setOrders] = useState<Partial<Record<Tab, Order | null>>>({});
   const table = useMemo(() => tableOf(tab, chip, result, graph), [tab, chip, result, graph]);
+  const known = result !== null;
+  // before there is an answer all columns stand, so that none comes as the first one does
+  const shown = useMemo(() => (known ? columnsShown(table) : table.columns.map((_, i) => i)), [table, known]);
   const order = orders[tab] ?? null;
   const rows = useMemo(() => ordered(filtered(table, words), table, order), [table, words, order]);
   const copy = async (): Promise<void> => {
     try {
-      await navigator.clipboard.writeText(tsvOf(table, rows));
+      await navigator.clipboard.writeText(tsvOf(table, rows, shown));
       desk.say(`Copied ${counted(rows.length, 'row')}; paste into a spreadsheet.`);
     } catch {
       desk.say('The clipboard refuses; take the table out under Hand over instead.');
@@ -76,6 +80,7 @@ export function Ledger() {
             key={tab}
             label={`Table of ${tab}`}
             table={table}
+            shown={shown}
             rows={rows}
             order={order}
             onOrder={(next) => setOrders({ ...orders, [tab]: next })}

@@ -8,8 +8,8 @@ import { tableOf } from './tables.ts';
 
 const table: Table = {
   columns: [
-    { id: 'name', head: 'port', wide: 100 },
-    { id: 'flow', head: 'flow', kind: 'flow', unit: 'uL/min', wide: 100 },
+    { id: 'name', head: 'port' },
+    { id: 'flow', head: 'flow', kind: 'flow', unit: 'uL/min' },
   ],
   rows: [
     { ref: 'port:b', cells: ['=well 10', 2.5e-9 / 60] },
@@ -42,7 +42,7 @@ test('a filter keeps rows that hold every word', () => {
 });
 
 test('copied and saved tables carry plain numbers, and no name runs as a formula', () => {
-  expect(tsvOf(table, table.rows).split('\r\n')).toEqual([
+  expect(tsvOf(table, table.rows, [0, 1]).split('\r\n')).toEqual([
     'port\tflow, µL/min',
     "'=well 10\t2.5",
     'well 2\t',

@@ -18,8 +18,8 @@ export interface Column {
   readonly digits?: number;
   /** What is typed into a cell is this quantity of the row's part. */
   readonly edits?: 'name' | 'width' | 'hole' | 'wanted' | 'within';
-  /** Width in the table, px. */
-  readonly wide: number;
+  /** Text of whole sentences, which may take more lines than one. */
+  readonly sentence?: true;
 }
 
 export interface Row {
@@ -139,15 +139,16 @@ function plainCell(cell: Cell | undefined, writing: Writing): string {
   return Number.isFinite(cell) ? String(Number(inUnit(cell, writing.unit).toPrecision(12))) : '';
 }
 
-/** The rows as a spreadsheet takes them from the clipboard: tabs between, one line each. */
-export function tsvOf(table: Table, rows: readonly Row[]): string {
+/**
+ * The rows as a spreadsheet takes them from the clipboard: tabs between, one line each.
+ * @param shown indices of the columns to take, in their order
+ */
+export function tsvOf(table: Table, rows: readonly Row[], shown: readonly number[]): string {
   const writings = table.columns.map((column, i) => writingOf(column, table.rows, i));
   const clean = (text: string): string => text.replace(/[\t\r\n]+/g, ' ');
   return [
-    table.columns.map((column, i) => clean(headText(column, writings[i]!))).join('\t'),
-    ...rows.map((row) =>
-      table.columns.map((_, i) => clean(plainCell(row.cells[i], writings[i]!))).join('\t'),
-    ),
+    shown.map((i) => clean(headText(table.columns[i]!, writings[i]!))).join('\t'),
+    ...rows.map((row) => shown.map((i) => clean(plainCell(row.cells[i], writings[i]!))).join('\t')),
   ].join('\r\n');
 }
 

@@ -44,7 +44,7 @@ export function countOf(tab: Tab, chip: Chip, result: Result | null, graph: Grap
   }
 }
 
-const NAME = { id: 'name', wide: 168, edits: 'name' } as const;
+const NAME = { id: 'name', edits: 'name' } as const;
 
 function ports(chip: Chip, result: Result | null): Table {
   const solved = new Map(result?.ports.map((port) => [port.id, port]));
@@ -56,18 +56,18 @@ function ports(chip: Chip, result: Result | null): Table {
   const wish = byFlow ? ({ kind: 'flow' } as const) : ({ kind: 'share', unit: '%' } as const);
   const columns: Column[] = [
     { ...NAME, head: 'port' },
-    { id: 'drive', head: 'drive', wide: 120 },
-    { id: 'wanted', head: 'wanted', ...wish, edits: 'wanted', wide: 96 },
-    { id: 'got', head: 'got', ...wish, wide: 88 },
-    { id: 'off', head: 'off', kind: 'share', unit: '%', signed: true, wide: 80 },
-    { id: 'share', head: 'share', kind: 'share', unit: '%', wide: 88 },
-    { id: 'flow', head: 'flow in', kind: 'flow', signed: false, wide: 112 },
-    { id: 'pressure', head: 'pressure', kind: 'pressure', wide: 112 },
-    { id: 'hole', head: 'hole', kind: 'length', unit: 'um', edits: 'hole', wide: 88 },
+    { id: 'drive', head: 'drive' },
+    { id: 'wanted', head: 'wanted', ...wish, edits: 'wanted' },
+    { id: 'got', head: 'got', ...wish },
+    { id: 'off', head: 'off', kind: 'share', unit: '%', signed: true },
+    { id: 'share', head: 'share', kind: 'share', unit: '%' },
+    { id: 'flow', head: 'flow in', kind: 'flow', signed: false },
+    { id: 'pressure', head: 'pressure', kind: 'pressure' },
+    { id: 'hole', head: 'hole', kind: 'length', unit: 'um', edits: 'hole' },
     ...(result?.making
       ? ([
-          { id: 'making', head: '± making', kind: 'share', unit: '%', digits: 2, wide: 96 },
-          { id: 'chief', head: 'most from', wide: 224 },
+          { id: 'making', head: '± from making', kind: 'share', unit: '%', digits: 2 },
+          { id: 'chief', head: 'most of it from' },
         ] as const)
       : []),
   ];
@@ -110,18 +110,18 @@ const beyondNoise = (off: number): number => (Math.abs(off) < 1e-9 ? 0 : off);
 function channels(chip: Chip, result: Result | null): Table {
   const columns: Column[] = [
     { ...NAME, head: 'channel' },
-    { id: 'layer', head: 'layer', wide: 72 },
-    { id: 'width', head: 'width', kind: 'length', unit: 'um', edits: 'width', wide: 80 },
-    { id: 'length', head: 'length', kind: 'length', unit: 'mm', wide: 88 },
-    { id: 'flow', head: 'flow', kind: 'flow', wide: 104 },
-    { id: 'share', head: 'share', kind: 'share', unit: '%', wide: 80 },
-    { id: 'drop', head: 'drop', kind: 'pressure', wide: 96 },
-    { id: 'speed', head: 'speed', kind: 'velocity', wide: 96 },
-    { id: 'shear', head: 'peak shear', kind: 'stress', wide: 108 },
-    { id: 'reynolds', head: 'Re', kind: 'number', wide: 64 },
-    { id: 'time', head: 'time', kind: 'time', unit: 's', wide: 80 },
+    { id: 'layer', head: 'layer' },
+    { id: 'width', head: 'width', kind: 'length', unit: 'um', edits: 'width' },
+    { id: 'length', head: 'length', kind: 'length', unit: 'mm' },
+    { id: 'flow', head: 'flow', kind: 'flow' },
+    { id: 'share', head: 'share', kind: 'share', unit: '%' },
+    { id: 'drop', head: 'drop', kind: 'pressure' },
+    { id: 'speed', head: 'speed', kind: 'velocity' },
+    { id: 'shear', head: 'peak shear', kind: 'stress' },
+    { id: 'reynolds', head: 'Re', kind: 'number' },
+    { id: 'time', head: 'time', kind: 'time', unit: 's' },
     ...(result?.making
-      ? ([{ id: 'making', head: 'shear ± making', kind: 'share', unit: '%', digits: 2, wide: 120 }] as const)
+      ? ([{ id: 'making', head: 'shear ± from making', kind: 'share', unit: '%', digits: 2 }] as const)
       : []),
   ];
   const solved = new Map(result?.channels.map((channel) => [channel.id, channel]));
@@ -177,13 +177,13 @@ const larger = (a: number | null, b: number | null): number | null =>
 
 function routes(result: Result | null): Table {
   const columns: Column[] = [
-    { id: 'from', head: 'from', wide: 144 },
-    { id: 'to', head: 'to', wide: 144 },
-    { id: 'share', head: 'share', kind: 'share', unit: '%', wide: 96 },
-    { id: 'time', head: 'time', kind: 'time', unit: 's', wide: 96 },
-    { id: 'shear', head: 'peak shear', kind: 'stress', wide: 112 },
-    { id: 'hug time', head: 'time at the wall', kind: 'time', unit: 's', wide: 128 },
-    { id: 'hug shear', head: 'shear at the wall', kind: 'stress', wide: 136 },
+    { id: 'from', head: 'from' },
+    { id: 'to', head: 'to' },
+    { id: 'share', head: 'share', kind: 'share', unit: '%' },
+    { id: 'time', head: 'time', kind: 'time', unit: 's' },
+    { id: 'shear', head: 'peak shear', kind: 'stress' },
+    { id: 'hug time', head: 'time at the wall', kind: 'time', unit: 's' },
+    { id: 'hug shear', head: 'shear at the wall', kind: 'stress' },
   ];
   const rows = (result?.routes ?? []).map(
     (route): Row => ({
@@ -204,14 +204,14 @@ function routes(result: Result | null): Table {
 
 function junctions(result: Result | null, graph: Graph | null): Table {
   const columns: Column[] = [
-    { id: 'name', head: 'place', wide: 144 },
-    { id: 'kind', head: 'kind', wide: 96 },
-    { id: 'arms', head: 'arms', kind: 'number', wide: 72 },
-    { id: 'x', head: 'right', kind: 'length', unit: 'mm', wide: 96 },
-    { id: 'y', head: 'up', kind: 'length', unit: 'mm', wide: 96 },
-    { id: 'solved', head: 'taken as', wide: 112 },
-    { id: 'shear', head: 'peak shear', kind: 'stress', wide: 112 },
-    { id: 'accuracy', head: 'accuracy', kind: 'share', unit: '%', wide: 96 },
+    { id: 'name', head: 'place' },
+    { id: 'kind', head: 'kind' },
+    { id: 'arms', head: 'arms', kind: 'number' },
+    { id: 'x', head: 'right', kind: 'length', unit: 'mm' },
+    { id: 'y', head: 'up', kind: 'length', unit: 'mm' },
+    { id: 'solved', head: 'taken as' },
+    { id: 'shear', head: 'peak shear', kind: 'stress' },
+    { id: 'accuracy', head: 'accuracy', kind: 'share', unit: '%' },
   ];
   const cells = new Map(result?.cells.map((cell) => [cell.id, cell]));
   const rows = (graph?.sites ?? [])
@@ -239,10 +239,10 @@ const SEVERITY = { stop: 'stop', warn: 'take care', note: 'note' } as const;
 
 function findings(chip: Chip, result: Result | null): Table {
   const columns: Column[] = [
-    { id: 'severity', head: 'weight', wide: 88 },
-    { id: 'where', head: 'where', wide: 136 },
-    { id: 'says', head: 'what was found', wide: 440 },
-    { id: 'do', head: 'what to do', wide: 320 },
+    { id: 'severity', head: 'weight' },
+    { id: 'where', head: 'where' },
+    { id: 'says', head: 'what was found', sentence: true },
+    { id: 'do', head: 'what to do', sentence: true },
   ];
   const missed = (result?.limits ?? [])
     .filter((limit) => limit.met === false)
