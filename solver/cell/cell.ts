@@ -78,8 +78,14 @@ export interface CellSolution {
   readonly flowError: number;
   /** Bound of the relative error of a peak; null where the cell has none. */
   readonly peakError: number | null;
-  /** The part of both bounds that comes from standing a rectangle in for another profile; 0 for rectangles. */
+  /** What the peak of the fields is to be multiplied with, where a rectangle stands in for another profile. */
+  readonly peakScale: number;
+  /** The part of `flowError` that comes from standing a rectangle in for another profile; 0 for rectangles. */
   readonly profileError: number;
+  /** The same of `peakError`; null where the profile has no peak that is known. */
+  readonly profilePeakError: number | null;
+  /** Walls lean outward by as much as some fillet's radius, which leaves it sharp: the cell has no peak. */
+  readonly leansSharp: boolean;
   /** Depth of the extruded shape that was solved, in the caller's unit: the layer's own for rectangles. */
   readonly depth: number;
   /** Re-entrant corners without fillet, where shear is unbounded: the cell then has no peak. */

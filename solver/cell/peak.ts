@@ -28,7 +28,7 @@ const LEVELS = 16;
 export function peakShear(solution: CellSolution, pressures: ArrayLike<number>): PeakShear | null {
   const { fields, peakError } = solution;
   if (solution.sharp || peakError === null || !fields) return null;
-  const rims = rimPressures(solution, pressures);
+  const rims = Float64Array.from(rimPressures(solution, pressures), (p) => p * solution.peakScale);
   let best: PeakShear | null = null;
   for (const placement of solution.placements) {
     const found = largestWallShear(

@@ -21,7 +21,7 @@ export function solveCell(
   where = '',
 ): CellSolution {
   checkCell(shape, where);
-  const { shape: extruded, error: profileError } = equivalent(shape, where);
+  const { shape: extruded, error: profileError, peak } = equivalent(shape, where);
   const copy = canonical(extruded);
   const key = `${CELL_VERSION} ${copy.key}`;
   let solved: ShapeSolution | undefined = store?.get(key);
@@ -48,9 +48,11 @@ export function solveCell(
     inner,
     holes,
     flowError: solved.flowError + profileError + seriesError(portMatrix, holes),
-    // The rectangle that stands in has other side walls: its peaks say nothing.
-    peakError: profileError > 0 ? null : solved.peakError,
+    peakError: typeof peak === 'string' || solved.peakError === null ? null : solved.peakError + peak.error,
+    peakScale: typeof peak === 'string' ? 1 : peak.scale,
+    leansSharp: peak === 'leans sharp',
     profileError,
+    profilePeakError: typeof peak === 'string' ? null : peak.error,
     depth: extruded.depth,
     sharp: solved.sharp,
     checks: solved.checks,

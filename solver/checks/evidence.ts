@@ -32,6 +32,8 @@ export interface CellEvidence {
    */
   readonly accuracy: number;
   readonly upright: number;
+  /** What comes of it for the peak; null where none can be given. */
+  readonly uprightPeak: number | null;
 }
 
 /** What the checks are made from: the chip, how the fluid reads it, and what was solved. */

@@ -59,7 +59,7 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
 
 /** Junctions solved less exactly than was asked, or with upright walls in place of their own. */
 function junctions({ cells, asked }: Evidence, found: Gathered): void {
-  for (const { id, at, accuracy, upright } of cells) {
+  for (const { id, at, accuracy, upright, uprightPeak } of cells) {
     if (accuracy > LOOSE * asked) {
       found.add({
         kind: 'cell-accuracy',
@@ -74,13 +74,14 @@ function junctions({ cells, asked }: Evidence, found: Gathered): void {
         off: accuracy / (LOOSE * asked),
       });
     }
-    if (upright > UPRIGHT) {
+    if (upright > UPRIGHT || uprightPeak === null) {
+      const peak = uprightPeak === null ? 'is not given' : `may be ${percent(uprightPeak)} off`;
       found.add({
         kind: 'upright-walls',
         severity: upright > 5 * UPRIGHT ? 'warn' : 'note',
         where: id,
         at,
-        says: `${id} is solved with upright walls of the same area in place of its layer's own: its flows may be ${percent(upright)} off, and its peak shear is not given.`,
+        says: `${id} is solved with upright walls of the same area in place of its layer's own: its flows may be ${percent(upright)} off, and its peak shear ${peak}.`,
         do: 'Take that for the error of the split there, or make the layer shallower for its width.',
         value: upright,
         threshold: UPRIGHT,

@@ -19,7 +19,7 @@ export function cellResults(
   const findings: Finding[] = [];
   const cells = lumped.cells.map((cell, index) => {
     const result = cellResult(cell, lumped, index, flow, names);
-    if (cell.solution?.sharp) findings.push(sharpFinding(chip, cell));
+    if (cell.solution?.sharp || cell.solution?.leansSharp) findings.push(sharpFinding(chip, cell));
     return result;
   });
   return { cells, findings: [...merged(findings), ...thinningNote(lumped)] };
@@ -68,8 +68,17 @@ function faceNames(chip: Chip, lumped: Lumped): Map<number, string> {
   return names;
 }
 
-function sharpFinding(chip: Chip, { spec }: PlacedCell): Finding {
+function sharpFinding(chip: Chip, { spec, solution }: PlacedCell): Finding {
   const layer = chip.layers[spec.layerIndex];
+  if (!solution!.sharp)
+    return {
+      kind: 'sharp-corner',
+      severity: 'note',
+      where: spec.name,
+      says: `${spec.name} has a sharp inner corner, where wall shear has no bound: the walls of layer ${layer.id} lean outward by more than its fillets' radius, so no peak is given there.`,
+      do: `Give layer ${layer.id} a fillet radius above what its walls lean outward (of an etch, its depth).`,
+      at: [spec.origin[0] / NANOMETRES, spec.origin[1] / NANOMETRES],
+    };
   return {
     kind: 'sharp-corner',
     severity: 'note',

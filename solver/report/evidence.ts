@@ -29,7 +29,7 @@ export function cellEvidence({ cells }: Lumped): CellEvidence[] {
   return cells.flatMap(({ spec, solution }): CellEvidence[] => {
     if (!solution) return [];
     const { name: id, origin } = spec;
-    const { flowError, profileError } = solution;
+    const { flowError, profileError, profilePeakError } = solution;
     return [
       {
         id,
@@ -37,6 +37,7 @@ export function cellEvidence({ cells }: Lumped): CellEvidence[] {
         // What the turn into a hole adds is no matter of how exactly the shape was solved.
         accuracy: spec.faces.some(({ kind }) => kind === 'rim') ? 0 : flowError - profileError,
         upright: profileError,
+        uprightPeak: profilePeakError,
       },
     ];
   });

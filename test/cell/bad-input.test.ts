@@ -157,5 +157,6 @@ test('a bend of another profile says how far the rectangle in its place may be o
   const trapezoid = solveCell({ ...bend(0.2), profile: { kind: 'trapezoid', wallAngle: 75 } }, ROUGH);
   expect(trapezoid.profileError).toBeGreaterThan(0);
   expect(trapezoid.flowError).toBeGreaterThan(trapezoid.profileError);
+  // Its corner is sharp.
   expect(trapezoid.peakError).toBeNull();
 });

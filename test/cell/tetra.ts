@@ -2,8 +2,21 @@ import type { Mesh } from '../../solver/mesh/mesh.ts';
 import { factoriseIndefinite, solveIndefinite } from '../../solver/sparse/indefinite.ts';
 import { patternOfElements } from '../../solver/sparse/pattern.ts';
 
+/** Stokes flow in tetrahedra, viscosity 1. */
+export interface TetraFlow {
+  /** faces x faces by rows. */
+  readonly portMatrix: Float64Array;
+  /** Greatest wall shear over the middles of wall triangles that `counts` takes, for these face pressures. */
+  readonly peak: (pressures: readonly number[], counts: (x: number, y: number) => boolean) => number;
+}
+
+/** The port matrix alone; see `tetraFlow`. */
+export function tetraPortMatrix(...given: Parameters<typeof tetraFlow>): Float64Array {
+  return tetraFlow(...given).portMatrix;
+}
+
 /**
- * Port matrix by quadratic velocity and linear pressure on tetrahedra, the whole saddle factored at
+ * Flow by quadratic velocity and linear pressure on tetrahedra, the whole saddle factored at
  * once: slow, and nothing in common with the solver but the plan mesh.
  *
  * @param layers heights from half depth (0), a plane of symmetry, to the wall (1); or from floor (-1) to lid (1)
@@ -11,14 +24,14 @@ import { patternOfElements } from '../../solver/sparse/pattern.ts';
  * @param bore layers from this one on stand over the part of the plan that it keeps, and open upwards
  *   into the last face
  */
-export function tetraPortMatrix(
+export function tetraFlow(
   plan: Mesh,
   faces: number,
   halfDepth: number,
   layers: readonly number[],
   move: (x: number, y: number, s: number) => readonly [number, number] = (x, y) => [x, y],
   bore?: { readonly from: number; readonly keeps: (x: number, y: number) => boolean },
-): Float64Array {
+): TetraFlow {
   const { vertexCount: base } = plan;
   const levels = layers.length;
   const vertices = base * levels;
@@ -181,6 +194,7 @@ export function tetraPortMatrix(
       }
   }
 
+  const solutions: Float64Array[] = [];
   const factor = factoriseIndefinite(matrix);
   const out = new Float64Array(faces * faces);
   for (let j = 0; j < faces; j += 1) {
@@ -196,13 +210,49 @@ export function tetraPortMatrix(
     }
     solveIndefinite(factor, rest);
     for (let i = 0; i < total; i += 1) x[i]! += rest[i]!;
+    solutions.push(x);
     for (let i = 0; i < faces; i += 1) {
       let sum = 0;
       for (let k = 0; k < pressureStart; k += 1) sum += loads[i]![k]! * x[k]!;
       out[i * faces + j] = (whole ? 1 : 2) * sum;
     }
   }
-  return out;
+  const wallShear = (side: readonly number[], tet: number, velocity: Float64Array): number => {
+    const v = tets[tet]!;
+    const { g } = barycentric(v.map((i) => [vx(i), vy(i), vz(i)]));
+    const inwards = g[v.findIndex((i) => !side.includes(i))]!;
+    const normal = inwards.map((part) => part / Math.hypot(...inwards));
+    const gradients = quadraticGradients(
+      v.map((i) => (side.includes(i) ? 1 / 3 : 0)),
+      g,
+    );
+    // The velocity's slope along the normal, less what of it is along the normal itself.
+    const slope = unknown.map((of) =>
+      nodes[tet]!.reduce((sum, node, i) => {
+        const k = of[node]!;
+        return k < 0 ? sum : sum + velocity[k]! * gradients[i]!.reduce((s, gd, d) => s + gd * normal[d]!, 0);
+      }, 0),
+    );
+    const through = slope.reduce((sum, part, d) => sum + part * normal[d]!, 0);
+    return Math.hypot(...slope.map((part, d) => part - through * normal[d]!));
+  };
+  return {
+    portMatrix: out,
+    peak: (pressures, counts) => {
+      const velocity = new Float64Array(pressureStart);
+      solutions.forEach((x, j) => {
+        for (let i = 0; i < pressureStart; i += 1) velocity[i]! += pressures[j]! * x[i]!;
+      });
+      let most = 0;
+      for (const [name, side] of outside) {
+        if (kindOf(side) !== 0) continue;
+        const middle = [vx, vy].map((of) => side.reduce((sum, i) => sum + of(i), 0) / 3);
+        if (counts(middle[0]!, middle[1]!))
+          most = Math.max(most, wallShear(side, inner.get(name)!, velocity));
+      }
+      return most;
+    },
+  };
 }
 
 const EPSILON = 1e-9;

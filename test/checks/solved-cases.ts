@@ -184,7 +184,7 @@ const trickle = (share: number): Chip =>
 /** Findings of the checks alone about one junction that reached an accuracy. */
 const reached = (accuracy: number) => (): readonly Finding[] => {
   const chip = tee();
-  const junction = { id: 'junction:1', at: [0.03, 0.012], accuracy, upright: 0 } as const;
+  const junction = { id: 'junction:1', at: [0.03, 0.012], accuracy, upright: 0, uprightPeak: 0 } as const;
   return checkFindings({
     chip,
     graph: readGraph(chip),
