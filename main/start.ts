@@ -1,6 +1,5 @@
 import { spawn } from 'node:child_process';
 import { readFile } from 'node:fs/promises';
-import { enableCompileCache } from 'node:module';
 import { join, resolve } from 'node:path';
 import { Problem } from '../solver/problem/problem.ts';
 import { built, DESKTOP, PAGE } from './launch/built.ts';
@@ -8,10 +7,8 @@ import { startOptions, USAGE } from './launch/options.ts';
 import { fetchRuntime, runtimePath } from './launch/runtime.ts';
 import { serve } from './launch/serve.ts';
 
-/** `npm start`: the desktop program where its runtime is, else the same program in the browser. */
+/** `npm start`, by way of `start.js`: the desktop program where its runtime is, else the same program in the browser. */
 const root = resolve(import.meta.dirname, '..');
-// The second start need not read the sources again.
-enableCompileCache();
 const says = (line: string): void => console.log(line);
 
 async function desktop(executable: string, files: readonly string[]): Promise<number> {

@@ -13,7 +13,6 @@ export async function serve(
   options: StartOptions,
   says: (line: string) => void,
 ): Promise<void> {
-  const page = await built(root, PAGE, says);
   const sessions = createSessions({
     host: 'browser',
     dialogs: false,
@@ -21,11 +20,17 @@ export async function serve(
     assets: join(root, 'assets'),
     version,
   });
+  // The project is read while the page is looked at and the browser starts.
+  const [file] = options.files;
+  sessions.ready(file === undefined ? undefined : resolve(file));
+  const page = await built(root, PAGE, says).catch(async (error: unknown) => {
+    await sessions.close();
+    throw error;
+  });
   let stopping = false;
   const host = await startLoopbackHost({
     sessions,
     page,
-    files: options.files.map((file) => resolve(file)),
     port: options.port,
     idleMs: options.idleMs,
     onIdle: () => void stop(),

@@ -1,5 +1,5 @@
 import { createReadStream } from 'node:fs';
-import { createServer, type IncomingMessage, type Server, type ServerResponse } from 'node:http';
+import type { IncomingMessage, Server, ServerResponse } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { BODY_TYPE, EVENTS_PATH, REQUEST_PATH, WINDOW_HEADER } from '../contract/loopback.ts';
 import { type PageFile, pageFiles } from '../page/files.ts';
@@ -13,8 +13,6 @@ export interface LoopbackSettings {
   readonly sessions: Sessions;
   /** Folder of the built page. */
   readonly page: string;
-  /** Files to open in the first window. */
-  readonly files?: readonly string[];
   /** 0 or absent takes a free one. */
   readonly port?: number;
   /** How long to stay with no window, ms; absent or 0 stays for ever. */
@@ -33,6 +31,9 @@ export interface LoopbackHost {
   close(): Promise<void>;
 }
 
+// Imported as a module it would bring a client for the web with it, which takes longer than all the rest.
+const { createServer } = process.getBuiltinModule('node:http');
+
 const REFUSAL = `<!doctype html><html lang="en"><meta charset="utf-8"><title>Channelwright</title>
 <p>This window has no access. Start the program again: it opens a window that has.</p></html>`;
 
@@ -47,7 +48,6 @@ export async function startLoopbackHost(settings: LoopbackSettings): Promise<Loo
   const strangers = new Bucket(LIMITS.strangerRate, LIMITS.strangerBurst);
   const own = new Bucket(LIMITS.ownRate, LIMITS.ownBurst);
   let guard: Guard;
-  const first = [...(settings.files ?? [])].slice(0, 1);
   let receiving = 0;
 
   let idle: NodeJS.Timeout | undefined;
@@ -174,7 +174,6 @@ export async function startLoopbackHost(settings: LoopbackSettings): Promise<Loo
         if (method !== 'GET') return refuse(request, response, 405);
         if (!guard.originIsOurs(request, false)) return refuse(request, response, 403);
         streams.start(window, response, PAGE_HEADERS);
-        for (const file of first.splice(0)) sessions.open(window, file);
         return;
       }
       if (method !== 'POST') return refuse(request, response, 405);

@@ -2,8 +2,6 @@ import { Worker } from 'node:worker_threads';
 import { Problem } from '../../solver/problem/problem.ts';
 import type { EventData } from '../contract/contract.ts';
 import { checkFree } from '../export/mask/places.ts';
-import { splitTable } from '../export/note/split.ts';
-import { tableTabbed } from '../export/note/tables.ts';
 import { writeFiles } from '../export/write-files.ts';
 import { refusal } from '../session/refusal.ts';
 import type { Session } from '../session/session.ts';
@@ -104,9 +102,12 @@ export const noteRequests: Handlers<'note.start' | 'note.cancel' | 'note.split'>
     await worker.terminate();
     return {};
   },
-  'note.split': (session, { seq, result }) => {
+  'note.split': async (session, { seq, result }) => {
     checkStands(session, seq);
-    const table = splitTable(session.workplace.project.chip, result);
+    const { chip } = session.workplace.project;
+    const { splitTable } = await import('../export/note/split.ts');
+    const { tableTabbed } = await import('../export/note/tables.ts');
+    const table = splitTable(chip, result);
     return { tabbed: tableTabbed(table), rows: table.rows };
   },
 };

@@ -22,6 +22,11 @@ export interface Sessions {
   emit(window: string, name: string, data: unknown): void;
   /** Opens a file in a window; it hears of it by the event `opened` or `problem`. */
   open(window: string, path: string): void;
+  /**
+   * Starts a thread before any window is there, and opens `path` in it: the first window that comes takes
+   * it, and hears what happened meanwhile.
+   */
+  ready(path?: string): void;
   /** Closes the window's project and ends its thread. */
   end(window: string): Promise<void>;
   close(): Promise<void>;
@@ -30,9 +35,13 @@ export interface Sessions {
 
 interface Window {
   readonly worker: Worker;
+  /** Null until a window takes it. */
+  name: string | null;
   readonly waiting: Map<number, { done: (reply: Uint8Array) => void; size: number }>;
   size: number;
   ending: boolean;
+  /** Events of before the window listened for the first time; null where none are held. */
+  held: [name: string, data: string][] | null;
 }
 
 function refuse(kind: Refusal['kind'], what: string, remedy: string): Uint8Array {
@@ -44,19 +53,22 @@ export function createSessions(settings: SessionSettings): Sessions {
   const listeners = new Map<string, Set<EventListener>>();
   let next = 1;
 
+  /** A thread that no window has taken yet. */
+  let spare: Window | null = null;
+
   const send = (window: string, name: string, data: string): void => {
     for (const listener of [...(listeners.get(window) ?? [])]) listener(name, data);
   };
 
-  const start = (name: string): Window => {
+  const start = (name: string | null): Window => {
     // The bundle puts the thread's code beside the host's.
     const entry = import.meta.url.endsWith('.ts') ? './worker.ts' : './session-worker.js';
     const worker = new Worker(new URL(entry, import.meta.url), { workerData: settings });
-    const window: Window = { worker, waiting: new Map(), size: 0, ending: false };
-    windows.set(name, window);
+    const window: Window = { worker, name, waiting: new Map(), size: 0, ending: false, held: null };
     worker.on('message', (message: FromWorker) => {
       if (message.kind === 'event') {
-        send(name, message.name, message.data);
+        if (window.held) window.held.push([message.name, message.data]);
+        else if (window.name !== null) send(window.name, message.name, message.data);
         return;
       }
       const waiting = window.waiting.get(message.id);
@@ -66,7 +78,8 @@ export function createSessions(settings: SessionSettings): Sessions {
       waiting.done(message.body);
     });
     const gone = (): void => {
-      if (windows.get(name) === window) windows.delete(name);
+      if (spare === window) spare = null;
+      if (window.name !== null && windows.get(window.name) === window) windows.delete(window.name);
       for (const waiting of window.waiting.values()) {
         waiting.done(
           refuse(
@@ -83,18 +96,45 @@ export function createSessions(settings: SessionSettings): Sessions {
     return window;
   };
 
+  /** The thread that waits for a window becomes this one's; null where there is none. */
+  const takeSpare = (name: string): Window | null => {
+    const window = spare;
+    spare = null;
+    if (window) {
+      window.name = name;
+      windows.set(name, window);
+    }
+    return window;
+  };
+
+  const windowOf = (name: string): Window => {
+    const there = windows.get(name) ?? takeSpare(name);
+    if (there) return there;
+    const window = start(name);
+    windows.set(name, window);
+    return window;
+  };
+
   const post = (window: Window, message: ToWorker, transfer: ArrayBuffer[]): void => {
     window.worker.postMessage(message, transfer);
   };
 
+  /** Closes what a thread holds, and ends it. */
+  const finish = async (window: Window): Promise<void> => {
+    if (window.ending) return;
+    window.ending = true;
+    const exited = new Promise<void>((done) => window.worker.once('exit', () => done()));
+    post(window, { kind: 'end' }, []);
+    const late = setTimeout(() => void window.worker.terminate(), CLOSE_MS);
+    await exited;
+    clearTimeout(late);
+  };
+
   const sessions: Sessions = {
     async call(name, request, body) {
-      let window = windows.get(name);
-      if (!window) {
-        if (windows.size >= MOST_WINDOWS)
-          return refuse('too-many', `${MOST_WINDOWS} windows are open.`, 'Close one and try again.');
-        window = start(name);
-      }
+      if (!windows.has(name) && windows.size >= MOST_WINDOWS)
+        return refuse('too-many', `${MOST_WINDOWS} windows are open.`, 'Close one and try again.');
+      const window = windowOf(name);
       const { waiting } = window;
       if (waiting.size >= MOST_WAITING || window.size + body.length > MOST_WAITING_BYTES)
         return refuse('too-many', 'Too many requests wait in this window.', 'Wait a moment and try again.');
@@ -113,6 +153,12 @@ export function createSessions(settings: SessionSettings): Sessions {
       const those = listeners.get(window) ?? new Set();
       those.add(listener);
       listeners.set(window, those);
+      const mine = windows.get(window) ?? takeSpare(window);
+      if (mine?.held) {
+        const { held } = mine;
+        mine.held = null;
+        for (const [name, data] of held) listener(name, data);
+      }
       return () => {
         those.delete(listener);
         if (those.size === 0 && listeners.get(window) === those) listeners.delete(window);
@@ -122,21 +168,27 @@ export function createSessions(settings: SessionSettings): Sessions {
       send(window, name, JSON.stringify(data));
     },
     open(name, path) {
-      post(windows.get(name) ?? start(name), { kind: 'open', path }, []);
+      post(windowOf(name), { kind: 'open', path }, []);
+    },
+    ready(path) {
+      if (!spare) {
+        spare = start(null);
+        spare.held = [];
+      }
+      if (path !== undefined) post(spare, { kind: 'open', path }, []);
     },
     async end(name) {
       const window = windows.get(name);
-      if (!window || window.ending) return;
-      window.ending = true;
       windows.delete(name);
-      const exited = new Promise<void>((done) => window.worker.once('exit', () => done()));
-      post(window, { kind: 'end' }, []);
-      const late = setTimeout(() => void window.worker.terminate(), CLOSE_MS);
-      await exited;
-      clearTimeout(late);
+      if (window) await finish(window);
     },
     async close() {
-      await Promise.all([...windows.keys()].map((name) => sessions.end(name)));
+      const waiting = spare;
+      spare = null;
+      await Promise.all([
+        ...[...windows.keys()].map((name) => sessions.end(name)),
+        ...(waiting ? [finish(waiting)] : []),
+      ]);
       listeners.clear();
     },
     windows: () => [...windows.keys()],

@@ -1,3 +1,4 @@
+import { flushCompileCache } from 'node:module';
 import { parentPort, workerData } from 'node:worker_threads';
 import { handle } from '../requests/handle.ts';
 import type { FromWorker, SessionSettings, ToWorker } from './messages.ts';
@@ -31,3 +32,8 @@ async function take(message: ToWorker): Promise<void> {
 port.on('message', (message: ToWorker) => {
   last = last.then(() => take(message));
 });
+
+/** ms after which the start is over. */
+const STARTED_MS = 4000;
+// Also a thread that is ended hard leaves what it has compiled to the next start.
+setTimeout(flushCompileCache, STARTED_MS).unref();

@@ -3,9 +3,11 @@ import { connect, type Socket } from 'node:net';
 import { join } from 'node:path';
 import { setTimeout as wait } from 'node:timers/promises';
 import { expect, test, vi } from 'vitest';
+import { makeFile } from '../../db/make.ts';
 import { WINDOW_HEADER } from '../../main/contract/loopback.ts';
 import { encode } from '../../main/contract/wire.ts';
 import { LIMITS } from '../../main/loopback/limits.ts';
+import { writeDescription } from '../../solver/chip/description-write.ts';
 import { madeUpChip, random, randomEdit } from '../faults/random.ts';
 import { bytesTo, goodRequest, raw, SECRET, withHost } from './started.ts';
 
@@ -346,15 +348,44 @@ test('a window that closes lets its project go, whole; a host without windows st
   );
 });
 
-test('a file named at the start is opened in the first window, a bad one is said', async () => {
-  await withHost(
-    async (started) => {
-      const client = started.client('window-000001');
-      const heard = new Promise<string>((done) => client.on('problem', (problem) => done(problem.what)));
-      expect(await heard).toContain('no such file');
-    },
-    { files: ['/nowhere/a.chw'] },
-  );
+test('a file named at the start is read before there is a window; the first one has it and hears what was said', async () => {
+  await withHost(async (started) => {
+    started.sessions.ready('/nowhere/a.chw');
+    expect(started.sessions.windows()).toEqual([]);
+    const client = started.client('window-000001');
+    const heard = new Promise<string>((done) => client.on('problem', (problem) => done(problem.what)));
+    expect(await heard).toContain('no such file');
+    expect(started.sessions.windows()).toEqual(['window-000001']);
+  });
+  await withHost(async (started) => {
+    const path = join(started.folder, 'first.json');
+    writeFileSync(path, writeDescription(madeUpChip(3)));
+    started.sessions.ready(path);
+    // it asks before it listens, and is told of the opening all the same, once
+    const client = started.client('window-000001');
+    const { state } = await client.call('project.state', {});
+    expect(state?.chip.channels).toEqual(madeUpChip(3).channels);
+    let told = 0;
+    client.on('opened', () => {
+      told += 1;
+    });
+    await vi.waitFor(() => expect(told).toBe(1), WAIT);
+    // a second window begins empty
+    const second = started.client('window-000002');
+    expect((await second.call('project.state', {})).state).toBeNull();
+    expect(told).toBe(1);
+  });
+});
+
+test('a thread that no window came for ends with the host, and lets its project go', async () => {
+  await withHost(async (started) => {
+    const path = join(started.folder, 'mine.chw');
+    makeFile(path, madeUpChip(3), { program: '0' });
+    started.sessions.ready(path);
+    await vi.waitFor(() => expect(existsSync(join(started.folder, '.mine.chw.open'))).toBe(true), WAIT);
+    await started.sessions.close();
+    expect(readdirSync(started.folder).filter((name) => name.includes('mine'))).toEqual(['mine.chw']);
+  });
 });
 
 test('files are listed, read and written whole; nothing is replaced unasked', async () => {

@@ -19,7 +19,7 @@ export async function startHost(files: readonly string[] = []): Promise<Host> {
   const data = mkdtempSync(join(tmpdir(), 'channelwright-page-'));
   const child: ChildProcess = spawn(
     process.execPath,
-    [join(ROOT, 'main/start.ts'), '--no-open', '--idle', '10', ...files],
+    [join(ROOT, 'main/start.js'), '--no-open', '--idle', '10', ...files],
     {
       cwd: ROOT,
       // files are written into the same folder, so that nothing of the person's is touched
