@@ -7,6 +7,7 @@ import {
   type Head,
   LIST_KINDS,
   LISTS,
+  listOf,
   type PartKind,
   partHash,
   rememberPart,
@@ -105,7 +106,7 @@ function readFolded(store: Store, seal: Seal): Chip {
   ) as Record<PartKind, unknown[]>;
   const chip = readChip(assemble(lists));
   for (const kind of LIST_KINDS) {
-    const list: readonly object[] = chip[LISTS[kind]];
+    const list = listOf(chip, kind);
     for (const [place, { body, hash }] of found.get(kind)!.entries()) rememberPart(list[place]!, body, hash);
   }
   return chip;

@@ -16,6 +16,24 @@ test('the edit between two chips leads from one to the other, 200 random pairs',
   }
 });
 
+test('keep-outs come and go', () => {
+  const from = madeUpChip(2);
+  const part = {
+    id: 'clamp',
+    outline: [
+      [0, 0],
+      [9, 0],
+      [0, 9],
+    ] as const,
+    clearance: 5,
+  };
+  const to = { ...from, keepOuts: [part] };
+  expect(editBetween(from, to, 'add').changes).toEqual([
+    { kind: 'insert', list: 'keepOuts', index: 0, part },
+  ]);
+  expect(applyEdit(to, editBetween(to, from, 'away'))).toStrictEqual(from);
+});
+
 test('one channel widened among many is one change', () => {
   const from = madeUpChip(500);
   const wide = { ...from.channels[7]!, width: [1, 1] as const };

@@ -1,7 +1,7 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { Change, ChipEdit } from '../../solver/chip/edit.ts';
+import { LISTS, type ListName, partsOf } from '../../solver/chip/schema-check.ts';
 
-const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports'] as const;
 const KEYS = [
   'name',
   'note',
@@ -26,11 +26,11 @@ export function editBetween(from: Chip, to: Chip, label: string): ChipEdit {
   for (const key of KEYS) {
     if (from[key] !== to[key]) changes.push({ kind: 'set', key, value: to[key] ?? null } as Change);
   }
-  for (const list of LISTS) changes.push(...betweenLists(list, from[list], to[list]));
+  for (const list of LISTS) changes.push(...betweenLists(list, partsOf(from, list), partsOf(to, list)));
   return { label, changes };
 }
 
-function betweenLists(list: (typeof LISTS)[number], from: readonly Part[], to: readonly Part[]): Change[] {
+function betweenLists(list: ListName, from: readonly Part[], to: readonly Part[]): Change[] {
   if (from === to) return [];
   let head = 0;
   while (head < from.length && head < to.length && from[head] === to[head]) head += 1;

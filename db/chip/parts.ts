@@ -11,10 +11,15 @@ export const LISTS = {
   port: 'ports',
   target: 'targets',
   limit: 'limits',
+  'keep-out': 'keepOuts',
 } as const satisfies Record<string, keyof Chip>;
 export type ListKind = keyof typeof LISTS;
 export type PartKind = 'head' | ListKind;
 export const LIST_KINDS = Object.keys(LISTS) as ListKind[];
+
+/** A list of a chip by its kind, empty where there is none. */
+export const listOf = (chip: Chip | null, kind: ListKind): readonly object[] => chip?.[LISTS[kind]] ?? NONE;
+const NONE: readonly object[] = [];
 
 /** What is left of a chip without its lists. */
 export type Head = Pick<
@@ -70,7 +75,7 @@ export function partHash(kind: string, body: string): Uint8Array {
 export function* partsOf(chip: Chip): Generator<Part> {
   yield partOf('head', 0, headOf(chip));
   for (const kind of LIST_KINDS) {
-    const list: readonly object[] = chip[LISTS[kind]];
+    const list = listOf(chip, kind);
     for (let place = 0; place < list.length; place += 1) yield partOf(kind, place, list[place]!);
   }
 }
@@ -93,8 +98,8 @@ export function differences(
   const gone: { kind: ListKind; from: number }[] = [];
   write.push(partOf('head', 0, headOf(after)));
   for (const kind of LIST_KINDS) {
-    const old: readonly object[] = before?.[LISTS[kind]] ?? [];
-    const list: readonly object[] = after[LISTS[kind]];
+    const old = listOf(before, kind);
+    const list = listOf(after, kind);
     if (old === list) continue;
     for (let place = 0; place < list.length; place += 1) {
       if (old[place] !== list[place]) write.push(partOf(kind, place, list[place]!));

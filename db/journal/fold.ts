@@ -1,5 +1,5 @@
 import type { Chip } from '../../solver/chip/chip.ts';
-import { chipHash, differences, LIST_KINDS, LISTS } from '../chip/parts.ts';
+import { chipHash, differences, LIST_KINDS, listOf } from '../chip/parts.ts';
 import { writeSeal } from '../store/seals.ts';
 import type { Store } from '../store/store.ts';
 
@@ -22,7 +22,7 @@ export function fold(
 ): Folded & { readonly chip: Chip } {
   return store.transaction(() => {
     writeChip(store, before.chip, now.chip);
-    const rows = 1 + LIST_KINDS.reduce((sum, kind) => sum + now.chip[LISTS[kind]].length, 0);
+    const rows = 1 + LIST_KINDS.reduce((sum, kind) => sum + listOf(now.chip, kind).length, 0);
     writeSeal(store, 'chip', { seq: now.seq, rows, digest: chipHash(now.chip) });
     writeSeal(store, 'journal', { seq: now.seq, rows: 0, digest: now.hash });
     const base = letGo(store, before.base, now.seq);

@@ -155,7 +155,7 @@ function pieced(lists: Record<PartKind, unknown[]>, seal: Seal | undefined): Sal
     lists.layer.push({ id, depth: 50_000, profile: { kind: 'rectangle' }, fillet: 0 });
     report.push(`Layer "${id}" was lost: one of 50 µm depth stands for it; give it its depth again.`);
   };
-  for (const kind of ['channel', 'chamber', 'port'] as const)
+  for (const kind of ['channel', 'chamber', 'port', 'keep-out'] as const)
     for (const thing of lists[kind]) add((thing as { layer?: unknown }).layer);
   for (const via of lists.via) for (const id of (via as { layers?: unknown[] }).layers ?? []) add(id);
   const chip = attempt(() => readChip(assemble(lists))) ?? withoutTerms(lists, report);

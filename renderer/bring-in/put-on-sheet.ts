@@ -1,16 +1,14 @@
 import type { Chip, Layer } from '../../solver/chip/chip.ts';
-import type { Alteration, PartValue } from '../tools/tool.ts';
-
-const KINDS = ['channel', 'chamber', 'via', 'port'] as const;
-const LIST = { channel: 'channels', chamber: 'chambers', via: 'vias', port: 'ports' } as const;
+import { listOf } from '../edits/parts.ts';
+import { PARTS } from '../state/ref.ts';
+import { type Alteration, type PartValue, takenIds } from '../tools/tool.ts';
 
 /**
  * A chip that was brought in, put on the sheet as one edit: beside what is there, or in place of all of it.
  * Names that are taken get a number; a layer of the same name and depth is the same layer.
  */
 export function broughtIn(chip: Chip, brought: Chip, file: string, inPlace: boolean): Alteration {
-  const taken = new Set<string>();
-  if (!inPlace) for (const kind of KINDS) for (const { id } of chip[LIST[kind]]) taken.add(id);
+  const taken = inPlace ? new Set<string>() : takenIds(chip);
   const free = (id: string): string => {
     let name = id;
     for (let k = 2; taken.has(name); k += 1) name = `${id} (${k})`;
@@ -53,6 +51,6 @@ export function broughtIn(chip: Chip, brought: Chip, file: string, inPlace: bool
     };
     return { label, put, set: { layers: [...chip.layers, ...added], outline } };
   }
-  const drop = KINDS.flatMap((kind) => chip[LIST[kind]].map(({ id }) => `${kind}:${id}` as const));
+  const drop = PARTS.flatMap((kind) => listOf(chip, kind).map(({ id }) => `${kind}:${id}` as const));
   return { label, put, drop, set: { layers: [...layers.values()], outline: brought.outline } };
 }

@@ -14,6 +14,7 @@ import { TrialsPanel } from '../panels/trials-panel.tsx';
 import { useStore } from '../state/store.ts';
 import type { Panel } from '../state/view.ts';
 import { ChannelCard } from './channel-card.tsx';
+import { KeepOutCard } from './keep-out-card.tsx';
 import { NothingCard } from './nothing-card.tsx';
 import { ChamberCard, SeveralCard, ViaCard } from './other-cards.tsx';
 import { PortCard } from './port-card.tsx';
@@ -106,6 +107,8 @@ function Chosen() {
       return <ChannelCard key={only} channel={part.value} />;
     case 'chamber':
       return <ChamberCard key={only} chamber={part.value} />;
+    case 'keep-out':
+      return <KeepOutCard key={only} keepOut={part.value} />;
     case 'via':
       return <ViaCard key={only} via={part.value} />;
     default:

@@ -3,7 +3,7 @@ import { findParts } from '../edits/parts.ts';
 import { widen } from '../edits/shape.ts';
 import { area, boxOf } from '../geometry/path.ts';
 import { usePage } from '../page/context.tsx';
-import type { Ref } from '../state/ref.ts';
+import { PARTS, type Ref } from '../state/ref.ts';
 import { useStore } from '../state/store.ts';
 import type { PartValue } from '../tools/tool.ts';
 import { capital, counted, figure, lengthFigure } from '../words/figure.ts';
@@ -128,9 +128,9 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
   const parts = findParts(chip, refs);
   const channels = parts.flatMap((part) => (part.kind === 'channel' ? [part.value] : []));
   const ports = parts.flatMap((part) => (part.kind === 'port' ? [part.value] : []));
-  const kinds = (['channel', 'chamber', 'via', 'port'] as const)
-    .map((kind) => [kind, parts.filter((part) => part.kind === kind).length] as const)
-    .filter(([, n]) => n > 0);
+  const kinds = PARTS.map(
+    (kind) => [kind, parts.filter((part) => part.kind === kind).length] as const,
+  ).filter(([, n]) => n > 0);
   const common = <T,>(values: readonly T[]): T | null =>
     values.length > 0 && values.every((value) => value === values[0]) ? values[0]! : null;
   const change = (label: string, put: readonly PartValue[]): string | null => desk.attempt({ label, put });
@@ -139,7 +139,9 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
       `set the ${what} of ${counted(channels.length, 'channel')}`,
       channels.map((channel) => ({ kind: 'channel', value: { ...channel, ...value } })),
     );
-  const layers = common(parts.flatMap((part) => (part.kind === 'via' ? [] : [part.value.layer])));
+  const layers = common(
+    parts.flatMap((part) => (part.kind === 'via' || part.kind === 'keep-out' ? [] : [part.value.layer])),
+  );
   return (
     <>
       <h2>{capital(kinds.map(([kind, n]) => counted(n, kind)).join(' and '))}</h2>
@@ -189,7 +191,7 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
               change(
                 `move ${counted(parts.length, 'part')} to layer ${layer}`,
                 parts
-                  .filter((part) => part.kind !== 'via')
+                  .filter((part) => part.kind !== 'via' && part.kind !== 'keep-out')
                   .map((part) => ({ kind: part.kind, value: { ...part.value, layer } }) as PartValue),
               )
             }

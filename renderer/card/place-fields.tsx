@@ -1,6 +1,7 @@
-import type { Chamber, Channel, Port, Via } from '../../solver/chip/chip.ts';
+import type { Chamber, Channel, KeepOut, Port, Via } from '../../solver/chip/chip.ts';
 import { moveJoined } from '../edits/parts.ts';
 import { usePage } from '../page/context.tsx';
+import type { PartValue } from '../tools/tool.ts';
 import { QuantityField } from './quantity-field.tsx';
 import { RowsField } from './rows-field.tsx';
 
@@ -44,13 +45,14 @@ export function PlaceFields({
   );
 }
 
-/** Every corner of a channel or chamber, as numbers. */
+/** Every corner of a channel, chamber or keep-out, as numbers. */
 export function PlacesField({
   part,
 }: {
   readonly part:
     | { readonly kind: 'channel'; readonly value: Channel }
-    | { readonly kind: 'chamber'; readonly value: Chamber };
+    | { readonly kind: 'chamber'; readonly value: Chamber }
+    | { readonly kind: 'keep-out'; readonly value: KeepOut };
 }) {
   const { desk } = usePage();
   const places = part.kind === 'channel' ? part.value.path : part.value.outline;
@@ -68,7 +70,7 @@ export function PlacesField({
             put: [
               part.kind === 'channel'
                 ? { kind: 'channel', value: { ...part.value, path: points } }
-                : { kind: 'chamber', value: { ...part.value, outline: points } },
+                : ({ kind: part.kind, value: { ...part.value, outline: points } } as PartValue),
             ],
           });
         }}

@@ -1,6 +1,7 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { clipText, paste } from '../edits/clip.ts';
+import { listOf } from '../edits/parts.ts';
 import { align, type Edge, join, mirror, remove, type Shaping, split, turn } from '../edits/shape.ts';
 import type { Desk } from '../state/desk.ts';
 import { PARTS, type Ref } from '../state/ref.ts';
@@ -132,9 +133,8 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
       why: open,
       run: () => {
         const chip = desk.chip()!;
-        const lists = { channel: chip.channels, chamber: chip.chambers, via: chip.vias, port: chip.ports };
         desk.view.patch({
-          selection: PARTS.flatMap((kind) => lists[kind].map((part) => `${kind}:${part.id}`)),
+          selection: PARTS.flatMap((kind) => listOf(chip, kind).map((part) => `${kind}:${part.id}`)),
         });
       },
     },

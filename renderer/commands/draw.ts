@@ -24,6 +24,12 @@ const TOOLS: readonly (readonly [ToolName, string, string, string])[] = [
   ['gradient tree', 'Gradient tree', 'g', 'Draw a box; a tree that makes graded mixtures is laid into it.'],
   ['row of chambers', 'Row of chambers', 'w', 'Draw a box; equal chambers in a row are laid into it.'],
   ['posts', 'Posts', 'o', 'Draw a box; a row of filter posts is laid across it.'],
+  [
+    'keep-out',
+    'Keep-out',
+    'd',
+    'Draw a part of the chip that is to stay clear; the key again changes from rectangle to round to polygon.',
+  ],
   ['measure', 'Measure', 'm', 'Measure between two places.'],
 ];
 
@@ -36,7 +42,8 @@ export const drawCommands = (desk: Desk, bench: Workbench): Command[] =>
     group: 'Draw',
     why: () => (desk.chip() ? null : 'Open or begin a chip first.'),
     run: () => {
-      if (name === 'chamber' && desk.view.get().tool === 'chamber') bench.event({ kind: 'again' });
+      const areas = name === 'chamber' || name === 'keep-out';
+      if (areas && desk.view.get().tool === name) bench.event({ kind: 'again' });
       else bench.take(name);
     },
   }));

@@ -3,7 +3,7 @@ import { readDescription } from '../../solver/chip/description.ts';
 import { writeDescription } from '../../solver/chip/description-write.ts';
 import { add, type Xy } from '../geometry/vector.ts';
 import type { Ref } from '../state/ref.ts';
-import type { PartValue } from '../tools/tool.ts';
+import { type PartValue, takenIds } from '../tools/tool.ts';
 import { counted } from '../words/figure.ts';
 import { findParts, movedBy, nameParts, refOfPart } from './parts.ts';
 import { copyId, renamed, type Shaping } from './shape.ts';
@@ -25,6 +25,7 @@ export function clipText(chip: Chip, refs: readonly Ref[]): string | null {
     chambers: of('chamber'),
     vias: of('via'),
     ports: of('port'),
+    keepOuts: of('keep-out'),
     targets: chip.targets.filter((target) => ids.has('port' in target ? target.port : target.channel)),
     limits: [],
   });
@@ -46,11 +47,10 @@ export function paste(chip: Chip, text: string, by: Xy): Pasting | string {
     ...clip.chambers.map((value) => ({ kind: 'chamber', value }) as const),
     ...clip.vias.map((value) => ({ kind: 'via', value }) as const),
     ...clip.ports.map((value) => ({ kind: 'port', value }) as const),
+    ...(clip.keepOuts ?? []).map((value) => ({ kind: 'keep-out', value }) as const),
   ];
   if (parts.length === 0) return 'The clipboard holds a chip with nothing on it.';
-  const taken = new Set<string>();
-  for (const list of [chip.channels, chip.chambers, chip.vias, chip.ports])
-    for (const part of list) taken.add(part.id);
+  const taken = takenIds(chip);
   const names = new Map<string, string>();
   const put = parts.map((part) => {
     const { id } = part.value;

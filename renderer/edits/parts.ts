@@ -1,18 +1,26 @@
 import type { Chip, Nm, Point } from '../../solver/chip/chip.ts';
 import { type Box, boxOf } from '../geometry/path.ts';
 import { add, whole, type Xy } from '../geometry/vector.ts';
-import { type Part, partOf, type Ref } from '../state/ref.ts';
+import { PARTS, type Part, partOf, type Ref } from '../state/ref.ts';
 import type { PartValue } from '../tools/tool.ts';
 
-const LISTS = { channel: 'channels', chamber: 'chambers', via: 'vias', port: 'ports' } as const;
+/** The list of the chip that holds each kind of part. */
+export const LISTS = {
+  channel: 'channels',
+  chamber: 'chambers',
+  via: 'vias',
+  port: 'ports',
+  'keep-out': 'keepOuts',
+} as const satisfies Readonly<Record<Part, keyof Chip>>;
+
+/** The parts of a kind, none where the chip has no such list. */
+export const listOf = (chip: Chip, kind: Part): readonly PartValue['value'][] => chip[LISTS[kind]] ?? [];
 
 /** The part a reference names, or null. */
 export function findPart(chip: Chip, ref: Ref): PartValue | null {
   const part = partOf(ref);
   if (!part) return null;
-  const value = (chip[LISTS[part.kind]] as readonly { readonly id: string }[]).find(
-    (entry) => entry.id === part.id,
-  );
+  const value = listOf(chip, part.kind).find((entry) => entry.id === part.id);
   return value ? ({ kind: part.kind, value } as PartValue) : null;
 }
 
@@ -20,8 +28,8 @@ export function findPart(chip: Chip, ref: Ref): PartValue | null {
 export function findParts(chip: Chip, refs: readonly Ref[]): PartValue[] {
   const wanted = new Set(refs);
   const out: PartValue[] = [];
-  for (const kind of ['channel', 'chamber', 'via', 'port'] as const)
-    for (const value of chip[LISTS[kind]])
+  for (const kind of PARTS)
+    for (const value of listOf(chip, kind))
       if (wanted.has(`${kind}:${value.id}`)) out.push({ kind, value } as PartValue);
   return out;
 }
@@ -31,7 +39,7 @@ export const refOfPart = ({ kind, value }: PartValue): Ref => `${kind}:${value.i
 /** Every place that draws a part: points of a path or outline, or its centre. */
 export function placesOf(part: PartValue): readonly Point[] {
   if (part.kind === 'channel') return part.value.path;
-  return part.kind === 'chamber' ? part.value.outline : [part.value.at];
+  return part.kind === 'port' || part.kind === 'via' ? [part.value.at] : part.value.outline;
 }
 
 /** The part with each of its places sent through `move` and rounded to whole nm. */
@@ -45,6 +53,11 @@ export function movedBy(part: PartValue, move: (p: Xy, index: number) => Xy): Pa
     case 'chamber':
       return {
         kind: 'chamber',
+        value: { ...part.value, outline: part.value.outline.map((p, i) => whole(move(p, i))) },
+      };
+    case 'keep-out':
+      return {
+        kind: 'keep-out',
         value: { ...part.value, outline: part.value.outline.map((p, i) => whole(move(p, i))) },
       };
     case 'via':
@@ -85,7 +98,7 @@ export function drawAlong(
 ): PartValue[] {
   const out: PartValue[] = [];
   for (const kind of ['channel', 'via', 'port'] as const)
-    for (const value of chip[LISTS[kind]]) {
+    for (const value of listOf(chip, kind)) {
       const part = { kind, value } as PartValue;
       if (without.has(refOfPart(part)) || !placesOf(part).some(([x, y]) => places.has(`${x} ${y}`))) continue;
       out.push(movedBy(part, (p) => (places.has(`${p[0]} ${p[1]}`) ? add(p, by) : p)));

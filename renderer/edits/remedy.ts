@@ -3,7 +3,13 @@ import { readEdit } from '../../solver/chip/edit-read.ts';
 import type { Finding } from '../../solver/problem/finding.ts';
 import type { Alteration, PartValue, Whole } from '../tools/tool.ts';
 
-const KINDS = { channels: 'channel', chambers: 'chamber', vias: 'via', ports: 'port' } as const;
+const KINDS = {
+  channels: 'channel',
+  chambers: 'chamber',
+  vias: 'via',
+  ports: 'port',
+  keepOuts: 'keep-out',
+} as const;
 
 /** What the remedy of a finding changes, as hands would; `layers` are the chip's, of which it may change one. */
 export function remedyOf(

@@ -1,9 +1,8 @@
 import type { Chip, Limit, Target } from '../../solver/chip/chip.ts';
 import type { Change, ChipEdit } from '../../solver/chip/edit.ts';
-import { readRef } from '../state/ref.ts';
+import { PARTS, readRef } from '../state/ref.ts';
 import type { Alteration } from '../tools/tool.ts';
-
-const LISTS = { channel: 'channels', chamber: 'chambers', via: 'vias', port: 'ports' } as const;
+import { LISTS, listOf } from './parts.ts';
 
 /**
  * An alteration as the edit that the project keeps: parts in place of those that bear their ids, new ones
@@ -30,18 +29,14 @@ export function toEdit(chip: Chip, alteration: Alteration): ChipEdit {
     }
   }
   if (set.layers) changes.push(...layerChanges(chip, set.layers));
-  const known = {
-    channels: new Set(chip.channels.map((part) => part.id)),
-    chambers: new Set(chip.chambers.map((part) => part.id)),
-    vias: new Set(chip.vias.map((part) => part.id)),
-    ports: new Set(chip.ports.map((part) => part.id)),
-  };
-  const added = { channels: 0, chambers: 0, vias: 0, ports: 0 };
+  const known = new Map(PARTS.map((kind) => [kind, new Set(listOf(chip, kind).map((part) => part.id))]));
+  const added = new Map<string, number>();
   for (const { kind, value } of alteration.put ?? []) {
     const list = LISTS[kind];
-    const there = known[list].has(value.id) && !gone.has(value.id);
-    const index = chip[list].filter((part) => !gone.has(part.id)).length + added[list];
-    if (!there) added[list] += 1;
+    const there = known.get(kind)!.has(value.id) && !gone.has(value.id);
+    const more = added.get(kind) ?? 0;
+    const index = listOf(chip, kind).filter((part) => !gone.has(part.id)).length + more;
+    if (!there) added.set(kind, more + 1);
     changes.push(
       (there
         ? { kind: 'put', list, id: value.id, part: value }

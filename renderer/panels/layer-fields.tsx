@@ -26,7 +26,8 @@ export function LayerFields() {
     chip.channels.some((part) => part.layer === id) ||
     chip.chambers.some((part) => part.layer === id) ||
     chip.ports.some((part) => part.layer === id) ||
-    chip.vias.some((part) => part.layers.includes(id));
+    chip.vias.some((part) => part.layers.includes(id)) ||
+    (chip.keepOuts?.some((part) => part.layer === id) ?? false);
   const set = (label: string, layers: readonly Layer[]): string | null =>
     desk.attempt({ label, set: { layers } });
   const add = (): void => {

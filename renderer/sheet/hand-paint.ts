@@ -104,7 +104,7 @@ function paintPart(
           ctx.lineWidth = Math.max(stretch.width[0], THINNEST / scale) + 2 * more;
           ctx.stroke();
         }
-      } else if (part.kind === 'chamber') {
+      } else if (part.kind === 'chamber' || part.kind === 'keep-out') {
         part.value.outline.forEach(([x, y], i) => {
           if (i === 0) ctx.moveTo(x, y);
           else ctx.lineTo(x, y);
@@ -114,7 +114,7 @@ function paintPart(
           ctx.strokeStyle = colour;
           ctx.lineWidth = 2.5 / scale;
           ctx.stroke();
-        } else {
+        } else if (part.kind === 'chamber') {
           ctx.fillStyle = colour;
           ctx.fill();
         }
@@ -149,7 +149,7 @@ function paintChosen(
     return;
   }
   inPlan(ctx, camera, size, () => {
-    if (part.kind === 'chamber') {
+    if (part.kind !== 'channel') {
       ctx.beginPath();
       part.value.outline.forEach(([x, y], i) => {
         if (i === 0) ctx.moveTo(x, y);

@@ -14,6 +14,7 @@ import { drawChannelWords } from './channel-words.ts';
 import { drawEdge, drawScaleBar, takeEdge } from './edge.ts';
 import { type Directions, directionsOf, drawFlowMarks } from './flow-marks.ts';
 import { paintHand } from './hand-paint.ts';
+import { drawKeepOuts } from './keep-outs.ts';
 import { drawPlaceWords, drawPorts, drawPortWords } from './marks.ts';
 import { type Shown, shown } from './overlay.ts';
 import { createPainter } from './painter.ts';
@@ -104,6 +105,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         ctx.fillRect(0, 0, size.width, size.height);
         drawEdge(ctx, d.chip, camera, size, look);
         drawUnderlay(ctx, desk, camera, size);
+        drawKeepOuts(ctx, d.chip, camera, size, look);
         d.bodies.draw(ctx, camera, size, d.spatial, {
           scheme: scheme(),
           palette: look,
@@ -194,7 +196,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
 /** Where a part, a piece or a place read from the chip lies; its middle. */
 export function placeOf(chip: Chip, where: string): Xy | null {
   const id = where.replace(/#\d+$/, '');
-  for (const kind of ['channel', 'port', 'chamber', 'via']) {
+  for (const kind of ['channel', 'port', 'chamber', 'via', 'keep-out']) {
     const part = findPart(chip, where.includes(':') ? where : `${kind}:${id}`);
     if (!part) continue;
     if (part.kind === 'channel') {

@@ -51,7 +51,7 @@ const piecesOf = (result: Result | null, id: string) =>
   result?.channels.find((channel) => channel.id === id)?.pieces ?? [];
 
 /** Kinds of findings about what lies beside what. */
-const NEAR: ReadonlySet<string> = new Set(['near-miss', 'least-gap', 'etch-merge', 'wall-leans']);
+const NEAR: ReadonlySet<string> = new Set(['near-miss', 'least-gap', 'etch-merge', 'wall-leans', 'keep-out']);
 const MOST = 3;
 
 /** Joins and near misses that arise where the hand is: those that the chip as it stands does not have. */

@@ -64,5 +64,5 @@ function anchor(preview: Preview, width: number): readonly [number, number] | nu
   const part = preview.parts?.[0];
   if (!part) return [width / 2, 0];
   if (part.kind === 'channel') return part.value.path[0]!;
-  return part.kind === 'chamber' ? part.value.outline[0]! : part.value.at;
+  return part.kind === 'port' || part.kind === 'via' ? part.value.at : part.value.outline[0]!;
 }

@@ -10,9 +10,9 @@ export interface Hit {
   readonly id: string;
   /** Index of the part in its list of the chip. */
   readonly index: number;
-  /** Channels and chambers: the vertex within reach, else -1. */
+  /** Channels, chambers and keep-outs: the vertex within reach, else -1. */
   readonly vertex: number;
-  /** Channels and chambers: the segment nearest, from its first vertex, else -1. */
+  /** Channels, chambers and keep-outs: the segment nearest, from its first vertex, else -1. */
   readonly segment: number;
   /** The place itself, on the centreline or at the centre. */
   readonly at: Xy;
@@ -21,7 +21,7 @@ export interface Hit {
 }
 
 /**
- * Where everything of one chip lies: an index over channel segments, chambers, vias and ports, built once
+ * Where everything of one chip lies: an index over channel segments, chambers, holes and keep-outs, built once
  * for a chip and asked for hits, boxes and neighbours.
  */
 export class Spatial {
@@ -32,7 +32,8 @@ export class Spatial {
 
   constructor(chip: Chip) {
     this.chip = chip;
-    let count = chip.chambers.length + chip.vias.length + chip.ports.length;
+    const keepOuts = chip.keepOuts ?? [];
+    let count = chip.chambers.length + chip.vias.length + chip.ports.length + keepOuts.length;
     for (const channel of chip.channels) count += channel.path.length - 1;
     this.tree = new Flatbush(Math.max(1, count));
     this.entries = new Int32Array(3 * Math.max(1, count));
@@ -64,6 +65,9 @@ export class Spatial {
     chip.ports.forEach((port, i) => {
       enter(3, i, -1, boxOf([port.at], port.diameter / 2)!);
     });
+    keepOuts.forEach((keepOut, i) => {
+      enter(4, i, -1, boxOf(keepOut.outline)!);
+    });
     if (n === 0) {
       this.entries[0] = -1;
       this.tree.add(0, 0, 0, 0);
@@ -71,14 +75,14 @@ export class Spatial {
     this.tree.finish();
   }
 
-  /** The nearest thing within `reach` nm: ports and vias before channels, channels before chambers. */
+  /** The nearest thing within `reach` nm: ports and vias before channels, channels before chambers and those before keep-outs. */
   hit(p: Xy, reach: number): Hit | null {
     let best: Hit | null = null;
     let order = Number.POSITIVE_INFINITY;
     for (const entry of this.tree.search(p[0] - reach, p[1] - reach, p[0] + reach, p[1] + reach)) {
       const found = this.measure(entry, p, reach);
       if (!found || found.away > reach) continue;
-      const rank = { port: 0, via: 0, channel: 1, chamber: 2 }[found.kind];
+      const rank = { port: 0, via: 0, channel: 1, chamber: 2, 'keep-out': 3 }[found.kind];
       // inside several bodies: the one whose middle is nearest
       const value = rank * 4 * reach + found.away + 1e-3 * Math.min(reach, distance(p, found.at));
       if (value < order) {
@@ -134,6 +138,8 @@ export class Spatial {
         return { kind: 'via', id: chip.vias[index]!.id };
       case 3:
         return { kind: 'port', id: chip.ports[index]!.id };
+      case 4:
+        return { kind: 'keep-out', id: chip.keepOuts![index]!.id };
       default:
         return null;
     }
@@ -145,6 +151,7 @@ export class Spatial {
     const { chip } = this;
     if (part.kind === 'channel') return chip.channels.find((c) => c.id === part.id)!.path.every(within);
     if (part.kind === 'chamber') return chip.chambers.find((c) => c.id === part.id)!.outline.every(within);
+    if (part.kind === 'keep-out') return chip.keepOuts!.find((k) => k.id === part.id)!.outline.every(within);
     if (part.kind === 'via') return within(chip.vias.find((v) => v.id === part.id)!.at);
     return within(chip.ports.find((q) => q.id === part.id)!.at);
   }
@@ -164,8 +171,8 @@ export class Spatial {
       const vertex = Math.min(first, second) > reach ? -1 : first <= second ? segment : segment + 1;
       return { ...part, index, segment, vertex, at: near.at, away };
     }
-    if (part.kind === 'chamber') {
-      const { outline } = chip.chambers[index]!;
+    if (part.kind === 'chamber' || part.kind === 'keep-out') {
+      const { outline } = part.kind === 'chamber' ? chip.chambers[index]! : chip.keepOuts![index]!;
       let best = { away: Number.POSITIVE_INFINITY, segment: -1, at: p };
       let vertex = -1;
       outline.forEach((a, i) => {

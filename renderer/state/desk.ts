@@ -276,6 +276,8 @@ function stillThere(chip: Chip, ref: string): boolean {
       return chip.vias.some((part) => part.id === id);
     case 'port':
       return chip.ports.some((part) => part.id === id);
+    case 'keep-out':
+      return chip.keepOuts?.some((part) => part.id === id) ?? false;
     default:
       return true;
   }

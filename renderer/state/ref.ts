@@ -1,10 +1,10 @@
 /**
- * What can be pointed at, as text: "channel:feed", "chamber:well", "via:v1", "port:in" are parts of the
- * chip; "junction:3", "piece:feed#2", "route:in>out", "finding:4" and "chip" are read from it.
+ * What can be pointed at, as text: "channel:feed", "chamber:well", "via:v1", "port:in", "keep-out:clamp" are
+ * parts of the chip; "junction:3", "piece:feed#2", "route:in>out", "finding:4" and "chip" are read from it.
  */
 export type Ref = string;
 
-export const PARTS = ['channel', 'chamber', 'via', 'port'] as const;
+export const PARTS = ['channel', 'chamber', 'via', 'port', 'keep-out'] as const;
 export type Part = (typeof PARTS)[number];
 
 export const refTo = (kind: string, id: string): Ref => `${kind}:${id}`;

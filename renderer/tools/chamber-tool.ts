@@ -1,10 +1,18 @@
-import type { Chamber, Point } from '../../solver/chip/chip.ts';
+import type { Point } from '../../solver/chip/chip.ts';
 import { area, boxBetween } from '../geometry/path.ts';
 import { add, distance, same, times, whole, type Xy } from '../geometry/vector.ts';
 import { lengthFigure } from '../words/figure.ts';
 import { circle } from './round.ts';
 import { type Snapped, snap } from './snap.ts';
-import { freshId, type Outcome, type Preview, type Scope, type Tool, type ToolEvent } from './tool.ts';
+import {
+  freshId,
+  type Outcome,
+  type PartValue,
+  type Preview,
+  type Scope,
+  type Tool,
+  type ToolEvent,
+} from './tool.ts';
 import {
   lengthFault,
   nextField,
@@ -16,11 +24,15 @@ import {
   typeInto,
 } from './typing.ts';
 
-/** Chambers: a rectangle between two corners, a circle about its middle, or a polygon point by point. */
+/**
+ * Chambers and keep-outs: a rectangle between two corners, a circle about its middle, or a polygon point by
+ * point.
+ */
 const FORMS = ['rectangle', 'round', 'polygon'] as const;
 export type ChamberForm = (typeof FORMS)[number];
 
 export interface ChamberState {
+  readonly makes: Makes;
   readonly form: ChamberForm;
   readonly points: readonly Xy[];
   readonly at: Xy;
@@ -30,7 +42,16 @@ export interface ChamberState {
   readonly pressed: Xy | null;
 }
 
-const start = (scope: Scope): ChamberState => ({
+type Makes = 'chamber' | 'keep-out';
+
+/** What is drawn within an outline; a keep-out is one of every layer until its card says otherwise. */
+const made = (makes: Makes, id: string, outline: readonly Point[], scope: Scope): PartValue =>
+  makes === 'chamber'
+    ? { kind: makes, value: { id, layer: scope.layer, outline } }
+    : { kind: makes, value: { id, outline, clearance: 0 } };
+
+const start = (makes: Makes, scope: Scope): ChamberState => ({
+  makes,
   form: 'rectangle',
   points: [],
   at: scope.centre,
@@ -83,13 +104,12 @@ function outlineOf(state: ChamberState, to: Xy): readonly Point[] | null {
 function finish(state: ChamberState, to: Xy, scope: Scope): Outcome<ChamberState> {
   const outline = outlineOf(state, to);
   if (!outline || Math.abs(area(outline)) === 0)
-    return { state: begun(state), says: 'A chamber encloses an area; give it a width and a height.' };
-  const id = freshId(scope.chip, 'chamber');
-  const value: Chamber = { id, layer: scope.layer, outline };
+    return { state: begun(state), says: `A ${state.makes} encloses an area; give it a width and a height.` };
+  const id = freshId(scope.chip, state.makes);
   return {
     state: begun({ ...state, at: to }),
-    alter: { label: 'draw a chamber', put: [{ kind: 'chamber', value }] },
-    select: [`chamber:${id}`],
+    alter: { label: `draw a ${state.makes}`, put: [made(state.makes, id, outline, scope)] },
+    select: [`${state.makes}:${id}`],
   };
 }
 
@@ -204,7 +224,7 @@ function preview(state: ChamberState, scope: Scope): Preview {
             { name: 'height', figure: lengthFigure(Math.abs(to[1] - first[1])), ...typing(1) },
           ];
   return {
-    parts: outline ? [{ kind: 'chamber', value: { id: '', layer: scope.layer, outline } }] : [],
+    parts: outline ? [made(state.makes, '', outline, scope)] : [],
     guide: first && !outline ? [state.points.at(-1)!, state.at] : null,
     cursor: state.at,
     readout,
@@ -212,8 +232,15 @@ function preview(state: ChamberState, scope: Scope): Preview {
       ? state.form === 'polygon'
         ? 'Click each corner; the first again, or Enter, closes it.'
         : 'Click the far corner, or type its size.'
-      : `A ${state.form === 'round' ? 'round one' : state.form}; the key H again changes that. Click, or type a place.`,
+      : `A ${state.form === 'round' ? 'round one' : state.form}; the same key again changes that. Click, or type a place.`,
   };
 }
 
-export const chamberTool: Tool<ChamberState> = { name: 'chamber', start, on, preview };
+const toolOf = (makes: Makes): Tool<ChamberState> => ({
+  name: makes,
+  start: (scope) => start(makes, scope),
+  on,
+  preview,
+});
+export const chamberTool = toolOf('chamber');
+export const keepOutTool = toolOf('keep-out');

@@ -1,4 +1,4 @@
-import type { Chamber, Channel, Chip, Port, Via } from '../../solver/chip/chip.ts';
+import type { Chamber, Channel, Chip, KeepOut, Port, Via } from '../../solver/chip/chip.ts';
 import type { TopOf } from '../../solver/chip/schema-chip.ts';
 import type { Xy } from '../geometry/vector.ts';
 import type { Spatial } from '../sheet/spatial.ts';
@@ -9,7 +9,8 @@ export type PartValue =
   | { readonly kind: 'channel'; readonly value: Channel }
   | { readonly kind: 'chamber'; readonly value: Chamber }
   | { readonly kind: 'via'; readonly value: Via }
-  | { readonly kind: 'port'; readonly value: Port };
+  | { readonly kind: 'port'; readonly value: Port }
+  | { readonly kind: 'keep-out'; readonly value: KeepOut };
 
 /** What is of the chip as a whole. */
 export type Whole = Partial<
@@ -60,6 +61,8 @@ export interface Scope {
   /** What is drawn next lies here. */
   readonly layer: string;
   readonly selection: readonly Ref[];
+  /** Parts that are not to be moved. */
+  readonly locked?: ReadonlySet<Ref>;
   /** nm: how near the pointer must come, and the step of the grid. */
   readonly reach: number;
   readonly grid: number;
@@ -135,6 +138,7 @@ export const TOOL_NAMES = [
   'row of chambers',
   'posts',
   'measure',
+  'keep-out',
 ] as const;
 export type ToolName = (typeof TOOL_NAMES)[number];
 
@@ -150,7 +154,7 @@ export function freshId(chip: Chip, stem: string, taken?: ReadonlySet<string>): 
 /** Every id that parts of the chip bear; layers have their own. */
 export function takenIds(chip: Chip): Set<string> {
   const ids = new Set<string>();
-  for (const list of [chip.channels, chip.chambers, chip.vias, chip.ports])
+  for (const list of [chip.channels, chip.chambers, chip.vias, chip.ports, chip.keepOuts ?? []])
     for (const part of list) ids.add(part.id);
   return ids;
 }

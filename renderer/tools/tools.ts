@@ -1,4 +1,4 @@
-import { chamberTool } from './chamber-tool.ts';
+import { chamberTool, keepOutTool } from './chamber-tool.ts';
 import { channelTool } from './channel-tool.ts';
 import { chamberRowTool, gradientTreeTool, postsTool, serpentineTool, splitTreeTool } from './maker-tools.ts';
 import { measureTool } from './measure-tool.ts';
@@ -35,6 +35,7 @@ const TAKE: Readonly<Record<ToolName, (scope: Scope) => Hand>> = {
   'gradient tree': (scope) => hold(gradientTreeTool, gradientTreeTool.start(scope)),
   'row of chambers': (scope) => hold(chamberRowTool, chamberRowTool.start(scope)),
   posts: (scope) => hold(postsTool, postsTool.start(scope)),
+  'keep-out': (scope) => hold(keepOutTool, keepOutTool.start(scope)),
   measure: (scope) => hold(measureTool, measureTool.start(scope)),
 };
 

@@ -91,6 +91,7 @@ export function placeRef(where: string, chip: Chip): Ref | null {
     ['port', chip.ports],
     ['chamber', chip.chambers],
     ['via', chip.vias],
+    ['keep-out', chip.keepOuts ?? []],
   ] as const)
     if (parts.some((part) => part.id === id)) return `${kind}:${id}`;
   return null;

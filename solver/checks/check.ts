@@ -2,6 +2,7 @@ import type { Finding } from '../problem/finding.ts';
 import type { Evidence } from './evidence.ts';
 import { byGravity, Gathered } from './gather.ts';
 import { checkHoles } from './holes.ts';
+import { checkKeepOuts } from './keep-outs.ts';
 import { checkLayers } from './layers.ts';
 import { checkNecks } from './necks.ts';
 import { checkOutline } from './outline.ts';
@@ -22,6 +23,7 @@ export function checkFindings(evidence: Evidence): Finding[] {
   const drawn = { chip, graph, rules };
   const found = new Gathered();
   checkOutline(drawn, found);
+  checkKeepOuts(drawn, found);
   checkWidths(drawn, found);
   checkNecks(drawn, found);
   checkWalls(drawn, found);

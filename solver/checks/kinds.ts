@@ -105,6 +105,14 @@ export const FINDING_KINDS = {
     threshold: '0',
     source: 'geometry',
   },
+  'keep-out': {
+    of: 'made',
+    title: 'In or near a keep-out',
+    formula:
+      'least distance of the drawing, with its width and what an etch adds, from the outline of the keep-out; 0 inside',
+    threshold: 'clearance of the keep-out; inside it none is allowed',
+    source: 'the user’s own outline and number',
+  },
   edge: {
     of: 'made',
     title: 'Too near the edge of the chip',
@@ -203,7 +211,7 @@ export const FINDING_KINDS = {
     of: 'trust',
     title: 'Junction solved with upright walls',
     formula:
-      '0.003 + 0.03 × how far a side wall leans over the narrowest width, and what is left between arms of different widths; twice that for profiles that were not measured',
+      '0.003 + 0.03 × how far a side wall leans over the narrowest width, and what is left between arms of different widths; twice that for profiles that were not measured; of the peak 0.05 + 2.5 × (lean / width)², and what its faces differ by',
     threshold: '0.01',
     source:
       'solves in tetrahedra of bends and tees with leaning and etched walls; threshold common practice, no source',

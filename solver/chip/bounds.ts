@@ -8,12 +8,13 @@ export const BOUNDS = {
   layers: 64,
   channels: 200_000,
   chambers: 20_000,
+  keepOuts: 2_000,
   vias: 50_000,
   ports: 50_000,
   targets: 100_000,
   limits: 1_000,
   accepted: 10_000,
-  /** Points of all paths and chamber outlines together. */
+  /** Points of all paths and outlines together. */
   points: 1_000_000,
   /** Points of one measured cross-section. */
   profilePoints: 10_000,

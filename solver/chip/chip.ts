@@ -36,6 +36,8 @@ export interface Chip {
   /** What chip and fittings bear, and how long the assay takes; absent where not said. */
   readonly rating?: Rating;
   readonly assay?: Assay;
+  /** What is to stay clear; absent rather than empty. */
+  readonly keepOuts?: readonly KeepOut[];
 }
 
 /** A tolerance: a share of the nominal value, or a length in nanometres. */
@@ -88,6 +90,19 @@ export interface Chamber {
   readonly layer: string;
   /** A simple polygon, not closed by repetition, either direction. */
   readonly outline: readonly Point[];
+}
+
+/** A part of the plan that nothing may reach into: under a clamp, a window, a sensor. No shape of the mask. */
+export interface KeepOut {
+  readonly id: string;
+  /** The one layer that is to stay clear, and the holes that lead to it; all of them where absent. */
+  readonly layer?: string;
+  /** A simple polygon, as of a chamber. */
+  readonly outline: readonly Point[];
+  /** How far what is drawn must stay off the outline. */
+  readonly clearance: Nm;
+  /** What it is for; absent rather than ''. */
+  readonly note?: string;
 }
 
 export interface Via {

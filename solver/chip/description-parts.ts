@@ -2,10 +2,10 @@ import { z } from 'zod';
 import type { FluidSpec, ShearModel } from '../fluid/spec.ts';
 import type { Profile } from '../section/profile.ts';
 import { BOUNDS } from './bounds.ts';
-import type { Drive, Layer, LengthUnit, Port, Roof, Via } from './chip.ts';
+import type { Drive, KeepOut, Layer, LengthUnit, Port, Roof, Via } from './chip.ts';
 import { readPoint } from './description-lists.ts';
 import { Fault, step, valueInWords } from './schema-fault.ts';
-import { choice, id, inMetres, keyed, list, pair, plan, quantity } from './schema-fields.ts';
+import { choice, id, inMetres, keyed, list, pair, plan, quantity, text } from './schema-fields.ts';
 import { pump, reservoir } from './schema-running.ts';
 import { readTolerances } from './schema-tolerance.ts';
 import { NM_PER_UNIT } from './units-write.ts';
@@ -91,6 +91,20 @@ export const via = (unit: LengthUnit) =>
     { id: id(), at: point(unit), layers: pair(id()), diameter: plan(unit) },
     { id: '"v1"', at: '[34000, 13000]', layers: '["flow", "upper"]', diameter: '300' },
   ).transform((value): Via => value);
+
+export const keepOut = (unit: LengthUnit) =>
+  keyed(
+    {
+      id: id(),
+      layer: id().optional(),
+      outline: list(point(unit), BOUNDS.points),
+      clearance: plan(unit).optional(),
+      note: text(BOUNDS.note, true).optional(),
+    },
+    { id: '"clamp"', outline: '[[0, 0], [4000, 0], [4000, 2000]]' },
+  ).transform(
+    ({ note, clearance = 0, ...value }): KeepOut => defined({ ...value, clearance, note: note || undefined }),
+  );
 
 const drive = (unit: LengthUnit) =>
   keyed(

@@ -274,5 +274,12 @@ export function writeDescription(chip: Chip): string {
   list('accepted', chip.accepted ?? [], ({ kind, where, reason }) => ({ kind, where, reason }));
   if (chip.rating) one('rating', { pressure: spell(chip.rating.pressure, 'pressure') });
   if (chip.assay) one('assay', { time: spell(chip.assay.time, 'time') });
+  list('keepOuts', chip.keepOuts ?? [], ({ id, layer, outline, clearance, note }) => ({
+    id,
+    ...(layer !== undefined && { layer }),
+    outline: points(outline, scale),
+    ...(clearance !== 0 && { clearance: clearance / scale }),
+    ...(note !== undefined && { note }),
+  }));
   return `{\n${lines.map((line) => `  ${line}`).join(',\n')}\n}\n`;
 }

@@ -183,7 +183,7 @@ describe('messages', () => {
       but('"id": "v1"', '"id": "feed"'),
       'vias[0].id (feed)',
       'id "feed" is borne by channels[0] too.',
-      'Give each channel, chamber, via and port an id of its own, and each layer.',
+      'Give each channel, chamber, via, port and keep-out an id of its own, and each layer.',
     ],
     [
       but('"layer": "flow", "path": [[20000', '"layer": "flaw", "path": [[20000'),

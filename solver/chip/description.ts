@@ -3,7 +3,7 @@ import { BOUNDS } from './bounds.ts';
 import type { Chip, LengthUnit } from './chip.ts';
 import { parseJson } from './description-json.ts';
 import { readPlanLists } from './description-lists.ts';
-import { fluid, layer, port, via } from './description-parts.ts';
+import { fluid, keepOut, layer, port, via } from './description-parts.ts';
 import { limit, target } from './description-terms.ts';
 import { checkChip } from './schema-check.ts';
 import { Fault, faultToProblem, parseWith, valueInWords } from './schema-fault.ts';
@@ -37,6 +37,7 @@ const KEYS: ReadonlySet<string> = new Set([
   'accepted',
   'rating',
   'assay',
+  'keepOuts',
 ]);
 
 const NEEDS = {
@@ -66,6 +67,7 @@ function rest(unit: LengthUnit) {
     accepted: accepted.optional(),
     rating: rating.optional(),
     assay: assay.optional(),
+    keepOuts: list(keepOut(unit), BOUNDS.keepOuts).optional(),
   });
 }
 
@@ -125,6 +127,7 @@ function chipOf(value: unknown, fallbackName: string): Chip {
     ...(parts.accepted && { accepted: parts.accepted }),
     ...(parts.rating && { rating: parts.rating }),
     ...(parts.assay && { assay: parts.assay }),
+    ...(parts.keepOuts?.length && { keepOuts: parts.keepOuts }),
   };
 }
 

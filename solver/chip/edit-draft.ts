@@ -1,6 +1,6 @@
 import type { Chip } from './chip.ts';
 import { borne, renamed } from './edit-rename.ts';
-import { LISTS, type ListName, type PartOf } from './schema-check.ts';
+import { LISTS, type ListName, type PartOf, partsOf } from './schema-check.ts';
 import type { TopKey, TopOf } from './schema-chip.ts';
 import { Fault, quoted } from './schema-fault.ts';
 
@@ -86,7 +86,13 @@ export class EditDraft {
   }
 
   #parts(list: ListName): readonly Part[] {
-    return this.#chip[list];
+    return partsOf(this.#chip, list);
+  }
+
+  /** Puts another list in its place; a chip has no empty list of keep-outs. */
+  #take(list: ListName, parts: readonly Part[]): void {
+    const { keepOuts: _, ...others } = this.#chip;
+    this.#chip = list === 'keepOuts' && parts.length === 0 ? others : { ...this.#chip, [list]: parts };
   }
 
   #finder(list: ListName, count: number): (id: string) => number {
@@ -135,7 +141,7 @@ export class EditDraft {
       this.fresh.add(part);
       this.#note(list, index);
     });
-    this.#chip = { ...this.#chip, [list]: parts };
+    this.#take(list, parts);
     return back.reverse();
   }
 
@@ -182,7 +188,7 @@ export class EditDraft {
       for (const { index, part } of changes) parts.splice(index, 0, part);
     }
     this.#replaced = null;
-    this.#chip = { ...this.#chip, [list]: parts };
+    this.#take(list, parts);
     return changes.map(({ part }) => ({ kind: 'remove', list, id: part.id }));
   }
 
@@ -202,7 +208,7 @@ export class EditDraft {
       throw this.#absent(list, changes[again]!.id, start + again);
     }
     this.#replaced = null;
-    this.#chip = { ...this.#chip, [list]: parts };
+    this.#take(list, parts);
     return back;
   }
 

@@ -31,6 +31,9 @@ function renamedLayer(chip: Chip, from: string, to: string): Chip {
       if (a !== from && b !== from) return via;
       return { ...via, layers: [a === from ? to : a, b === from ? to : b] };
     }),
+    ...(chip.keepOuts && {
+      keepOuts: mapped(chip.keepOuts, (part) => (part.layer === from ? { ...part, layer: to } : part)),
+    }),
     limits: mapped(chip.limits, (limit) =>
       limit.where === from && !borne(chip, from) ? { ...limit, where: to } : limit,
     ),

@@ -18,7 +18,7 @@ export interface Gap {
 }
 
 /** One body as a closed outline. */
-interface Solid {
+export interface Solid {
   readonly id: string;
   readonly layer: number;
   readonly area: Area;
@@ -59,15 +59,26 @@ export function gaps(chip: Chip, below: Nm): Gap[] {
 }
 
 function solidsOf(chip: Chip, drawing: Drawing): Solid[] {
-  const layers = layerNumbers(chip);
   const solids: Solid[] = [];
   for (let element = 0; element < drawing.elements.count; element++) {
-    const b = drawing.body(element);
-    const { channel } = b.element;
-    const { minX, minY, maxX, maxY } = b;
-    const area = { edges: outline(b), minX, minY, maxX, maxY, index: undefined };
-    solids.push({ id: chip.channels[channel]!.id, layer: drawing.layerOf[channel]!, area, element });
+    solids.push(elementSolid(chip, drawing, element));
   }
+  return [...solids, ...otherSolids(chip)];
+}
+
+/** What one element of a channel covers. */
+export function elementSolid(chip: Chip, drawing: Drawing, element: number): Solid {
+  const b = drawing.body(element);
+  const { channel } = b.element;
+  const { minX, minY, maxX, maxY } = b;
+  const area = { edges: outline(b), minX, minY, maxX, maxY, index: undefined };
+  return { id: chip.channels[channel]!.id, layer: drawing.layerOf[channel]!, area, element };
+}
+
+/** Chambers and holes; a via once for each of its layers. */
+export function otherSolids(chip: Chip): Solid[] {
+  const layers = layerNumbers(chip);
+  const solids: Solid[] = [];
   const add = (id: string, layer: string, area: Area) => {
     solids.push({ id, layer: layers.get(layer)!, area, element: -1 });
   };
@@ -83,17 +94,22 @@ function filled(solids: readonly Solid[], index: Flatbush, layer: number, x: num
   return index.search(x, y, x, y).some((i) => solids[i]!.layer === layer && inArea(solids[i]!.area, x, y));
 }
 
-interface Narrow {
+export interface Narrow {
   readonly width: number;
   readonly x: number;
   readonly y: number;
 }
 
 /** Tells whether a place is wall. */
-type Wall = (x: number, y: number) => boolean;
+export type Wall = (x: number, y: number) => boolean;
 
 /** The shortest way through wall between two outlines that do not meet, if shorter than `below`. */
-function narrowest(a: readonly Curve[], b: readonly Curve[], below: number, wall: Wall): Narrow | undefined {
+export function narrowest(
+  a: readonly Curve[],
+  b: readonly Curve[],
+  below: number,
+  wall: Wall,
+): Narrow | undefined {
   let best: Narrow | undefined;
   const offer = (width: number, x: number, y: number) => {
     if (width < (best?.width ?? below) && wall(x, y)) best = { width, x, y };

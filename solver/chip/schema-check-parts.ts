@@ -1,5 +1,5 @@
 import type { Profile } from '../section/profile.ts';
-import type { Chamber, Channel, Layer, Point, Port, Via } from './chip.ts';
+import type { Chamber, Channel, KeepOut, Layer, Point, Port, Via } from './chip.ts';
 import { at, Fault, quoted } from './schema-fault.ts';
 import { outlineFault } from './schema-outline.ts';
 import { between, notNegative, positive } from './schema-range.ts';
@@ -104,6 +104,11 @@ export function checkChannel(channel: Channel): void {
 
 export function checkChamber(chamber: Chamber): void {
   checkOutline(chamber.outline, 'outline');
+}
+
+export function checkKeepOut({ outline, clearance }: KeepOut): void {
+  checkOutline(outline, 'outline');
+  notNegative(clearance, 'clearance', 'length');
 }
 
 export function checkVia(via: Via): void {

@@ -1,8 +1,9 @@
 import { BOUNDS } from './bounds.ts';
-import type { Chamber, Channel, Chip, Layer, Port, Via } from './chip.ts';
+import type { Chamber, Channel, Chip, KeepOut, Layer, Port, Via } from './chip.ts';
 import {
   checkChamber,
   checkChannel,
+  checkKeepOut,
   checkLayer,
   checkOnLayer,
   checkPort,
@@ -15,7 +16,7 @@ import { nearest } from './schema-nearest.ts';
 import { checkAssay, checkRating } from './schema-running.ts';
 
 /** The lists of a chip whose entries bear ids. */
-export const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports'] as const;
+export const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports', 'keepOuts'] as const;
 export type ListName = (typeof LISTS)[number];
 export interface PartOf {
   readonly layers: Layer;
@@ -23,6 +24,12 @@ export interface PartOf {
   readonly chambers: Chamber;
   readonly vias: Via;
   readonly ports: Port;
+  readonly keepOuts: KeepOut;
+}
+
+/** A list of a chip, empty where the chip has none. */
+export function partsOf<L extends ListName>(chip: Chip, list: L): readonly PartOf[L][] {
+  return (chip[list] ?? []) as readonly PartOf[L][];
 }
 
 /** Cross-sections that have a shape only together with a width, so that no chamber can have them. */
@@ -30,10 +37,11 @@ const NEEDS_WIDTH: ReadonlySet<string> = new Set(['circle', 'ellipse', 'triangle
 
 function checkCounts(chip: Chip): void {
   for (const name of [...LISTS, 'targets', 'limits'] as const) {
-    if (chip[name].length > BOUNDS[name]) {
+    const count = chip[name]?.length ?? 0;
+    if (count > BOUNDS[name]) {
       throw new Fault(
         'too-many',
-        `has ${chip[name].length.toLocaleString('en')} entries; at most ${BOUNDS[name].toLocaleString('en')} are kept.`,
+        `has ${count.toLocaleString('en')} entries; at most ${BOUNDS[name].toLocaleString('en')} are kept.`,
         'Split the chip.',
         [name],
       );
@@ -42,6 +50,7 @@ function checkCounts(chip: Chip): void {
   let points = 0;
   for (const { path } of chip.channels) points += path.length;
   for (const { outline } of chip.chambers) points += outline.length;
+  for (const { outline } of chip.keepOuts ?? []) points += outline.length;
   if (points > BOUNDS.points) {
     throw new Fault(
       'too-many',
@@ -56,11 +65,11 @@ function byId(chip: Chip): { layers: Map<string, Layer>; others: Map<string, Lis
   const layers = new Map<string, Layer>();
   const others = new Map<string, ListName>();
   const twice = (list: ListName, i: number, first: ListName, id: string): never => {
-    const j = chip[first].findIndex((entry) => entry.id === id);
+    const j = partsOf(chip, first).findIndex((entry) => entry.id === id);
     throw new Fault(
       'duplicate',
       `${quoted(id)} is borne by ${first}[${j}] too.`,
-      'Give each channel, chamber, via and port an id of its own, and each layer.',
+      'Give each channel, chamber, via, port and keep-out an id of its own, and each layer.',
       [list, i, 'id'],
     );
   };
@@ -70,7 +79,7 @@ function byId(chip: Chip): { layers: Map<string, Layer>; others: Map<string, Lis
   });
   for (const list of LISTS) {
     if (list === 'layers') continue;
-    const entries: readonly { readonly id: string }[] = chip[list];
+    const entries: readonly { readonly id: string }[] = partsOf(chip, list);
     for (let i = 0; i < entries.length; i += 1) {
       const { id } = entries[i]!;
       const first = others.get(id);
@@ -87,6 +96,7 @@ const ONE: Readonly<Record<ListName, string>> = {
   chambers: 'chamber',
   vias: 'via',
   ports: 'port',
+  keepOuts: 'keep-out',
 };
 
 function unknownId(id: string, what: string, known: Iterable<string>, path: Path): Fault {
@@ -136,8 +146,10 @@ function checkTerms(
   each('limits', chip.limits, (limit) => {
     const { where } = limit;
     if (typeof where === 'string') {
-      if (!others.has(where) && !layers.has(where)) {
-        const known = [...others.keys(), ...layers.keys()];
+      const list = others.get(where);
+      if ((list === undefined || list === 'keepOuts') && !layers.has(where)) {
+        const drawn = [...others].flatMap(([id, of]) => (of === 'keepOuts' ? [] : [id]));
+        const known = [...drawn, ...layers.keys()];
         throw unknownId(where, 'channel, chamber, via, port or layer', known, ['where']);
       }
     } else if (where) {
@@ -177,6 +189,10 @@ const CHECKS: { readonly [L in ListName]: (part: PartOf[L], layerAt: LayerAt, fr
     layerAt(port.layer, 'layer');
     if (fresh) checkPort(port);
   },
+  keepOuts: (keepOut, layerAt, fresh) => {
+    if (keepOut.layer !== undefined) layerAt(keepOut.layer, 'layer');
+    if (fresh) checkKeepOut(keepOut);
+  },
 };
 
 function finder(layers: ReadonlyMap<string, Layer>): LayerAt {
@@ -207,7 +223,7 @@ export function checkChip(chip: Chip, fresh: (part: object) => boolean = () => t
   const { layers, others } = byId(chip);
   const layerAt = finder(layers);
   const all = <L extends ListName>(list: L): void => {
-    each(list, chip[list] as readonly PartOf[L][], (part) => CHECKS[list](part, layerAt, fresh(part)));
+    each(list, partsOf(chip, list), (part) => CHECKS[list](part, layerAt, fresh(part)));
   };
   LISTS.forEach(all);
   checkTerms(chip, layers, others);
@@ -218,7 +234,7 @@ export function checkReplaced(chip: Chip, replaced: ReadonlyMap<ListName, readon
   checkCounts(chip);
   const layerAt = finder(new Map(chip.layers.map((layer) => [layer.id, layer])));
   const some = <L extends ListName>(list: L, indices: readonly number[]): void => {
-    const parts = chip[list] as readonly PartOf[L][];
+    const parts = partsOf(chip, list);
     for (const index of indices) at([list, index], () => CHECKS[list](parts[index]!, layerAt, true));
   };
   for (const [list, indices] of replaced) some(list, indices);

@@ -53,6 +53,7 @@ const whole = keyed(
     accepted: accepted.exactOptional(),
     rating: ratingData.exactOptional(),
     assay: assayData.exactOptional(),
+    keepOuts: list(PART.keepOuts, BOUNDS.keepOuts).exactOptional(),
     layers: list(PART.layers, BOUNDS.layers),
     channels: list(PART.channels, BOUNDS.channels),
     chambers: list(PART.chambers, BOUNDS.chambers),
@@ -70,7 +71,8 @@ const whole = keyed(
 /** A chip that came as data, checked like one that a person wrote. Throws `Problem`. */
 export function readChip(value: unknown): Chip {
   try {
-    const chip: Chip = parseWith(whole, value);
+    const { keepOuts, ...drawn } = parseWith(whole, value);
+    const chip: Chip = keepOuts?.length ? { ...drawn, keepOuts } : drawn;
     checkChip(chip);
     return chip;
   } catch (error) {

@@ -1,11 +1,11 @@
 import type { z } from 'zod';
 import type { Profile } from '../section/profile.ts';
 import { BOUNDS } from './bounds.ts';
-import type { Chamber, Channel, Drive, Layer, Point, Port, Via } from './chip.ts';
+import type { Chamber, Channel, Drive, KeepOut, Layer, Point, Port, Via } from './chip.ts';
 import type { ListName, PartOf } from './schema-check.ts';
 import { byKind, field, kind, nm, readNm, si } from './schema-data.ts';
 import { at, Fault } from './schema-fault.ts';
-import { choice, id, keyed, list, pair, readId, readKeys, readList } from './schema-fields.ts';
+import { choice, id, keyed, list, pair, readId, readKeys, readList, text } from './schema-fields.ts';
 import { pumpData, reservoirData } from './schema-running.ts';
 import { ownTolerancesData, tolerancesData } from './schema-tolerance.ts';
 
@@ -134,10 +134,22 @@ const port: z.ZodType<Port> = keyed(
   { id: '"in"', at: '[0, 0]', layer: '"flow"', diameter: '0', drive: '{ "kind": "closed" }', tubing: '[]' },
 );
 
+const keepOut: z.ZodType<KeepOut> = keyed(
+  {
+    id: id(),
+    layer: id().exactOptional(),
+    outline: list(field(readPoint), BOUNDS.points),
+    clearance: nm,
+    note: text(BOUNDS.note, true).exactOptional(),
+  },
+  { id: '"clamp"', outline: '[[0, 0], [4000, 0], [4000, 2000]]', clearance: '0' },
+);
+
 export const PART: { readonly [L in ListName]: z.ZodType<PartOf[L]> } = {
   layers: layer,
   channels: field(readChannel),
   chambers: field(readChamber),
   vias: via,
   ports: port,
+  keepOuts: keepOut,
 };

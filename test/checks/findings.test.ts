@@ -7,12 +7,13 @@ import { applyEdit } from '../../solver/chip/edit.ts';
 import { readEdit } from '../../solver/chip/edit-read.ts';
 import type { Finding } from '../../solver/problem/finding.ts';
 import { type Case, chipOf, findings, line, ofKind, port } from './chips.ts';
-import { film, layer, MADE_CASES, made, well } from './made-cases.ts';
+import { clamp, film, layer, MADE_CASES, made, well } from './made-cases.ts';
 import { SOLVED_CASES } from './solved-cases.ts';
 
 /** Kinds whose remedy is a number, and so a button. */
 const WITH_BUTTON = [
   'hole-narrow',
+  'keep-out',
   'layer-wall',
   'least-width',
   'loop-passes',
@@ -70,6 +71,68 @@ describe('each kind: one chip just passes, one just fails', () => {
     expect(found!.value).toBeCloseTo(15, 1);
     expect(ofKind(film({ ...well(2100) }), 'roof-sags')[0]!.severity).toBe('stop');
     expect(ofKind(film({ ...well(1000) }), 'roof-sags')).toEqual([]);
+  });
+
+  test('a keep-out holds of channels, chambers and holes, of its own layer alone where it names one', () => {
+    const two = {
+      layers: [
+        { id: 'flow', depth: 100 },
+        { id: 'upper', depth: 50 },
+      ],
+    };
+    const inside = (more: object): string[] =>
+      ofKind(chipOf({ ...clamp(11000), ...more }), 'keep-out').map(({ where }) => where);
+    expect(inside({})).toEqual(['a']);
+    expect(inside({ ...two, ...clamp(11000, { layer: 'upper' }) })).toEqual([]);
+    expect(inside({ ...two, ...clamp(11000, { layer: 'flow' }) })).toEqual(['a']);
+    // 500 off the clamp's right side at 34000, a hole of 1000 about 35000 touches; at 35001 it does not
+    const hole = (x: number) =>
+      inside({
+        ...clamp(13000),
+        channels: [
+          line('a', 12000),
+          {
+            id: 'up',
+            layer: 'flow',
+            path: [
+              [x, 12000],
+              [x, 14000],
+            ],
+            width: 100,
+          },
+        ],
+        ports: [
+          port('in', [6000, 12000], { flow: '1 uL/min' }),
+          port('out', [66000, 12000], { pressure: 0 }),
+          port('tap', [x, 14000], { pressure: 0 }, 1000),
+        ],
+      });
+    expect(hole(34499)).toEqual(['port:tap']);
+    expect(hole(34501)).toEqual([]);
+    expect(inside({ ...well(2000), ...clamp(12500) })).toEqual(['chamber:well']);
+    expect(inside({ ...well(2000), ...clamp(13001) })).toEqual([]);
+    // wholly inside, no outline meeting the other
+    const whole = ofKind(
+      chipOf({
+        ...clamp(0, {
+          outline: [
+            [0, 0],
+            [75000, 0],
+            [75000, 27000],
+            [0, 27000],
+          ],
+        }),
+      }),
+      'keep-out',
+    );
+    expect(whole.map(({ where, severity }) => `${where} ${severity}`).sort()).toEqual([
+      'a stop',
+      'port:a in stop',
+      'port:a out stop',
+    ]);
+    const [named] = ofKind(chipOf(clamp(12000, { note: 'bolt head' })), 'keep-out');
+    expect(named!.says).toBe('a lies in the keep-out clamp (bolt head).');
+    expect(named!.remedy).toBeUndefined();
   });
 
   test('a tool rounds the corners of chambers and bends; one too thick does not fit', () => {

@@ -53,6 +53,22 @@ export const well = (height: number) => ({
   ],
 });
 
+/** A keep-out above the channel of y 12000, 200 wide: its top wall is at 12100. */
+export const clamp = (from: number, more: Record<string, unknown> = {}) => ({
+  keepOuts: [
+    {
+      id: 'clamp',
+      outline: [
+        [30000, from],
+        [34000, from],
+        [34000, from + 3000],
+        [30000, from + 3000],
+      ],
+      ...more,
+    },
+  ],
+});
+
 /**
  * For each kind a chip that just passes and one that just fails. The thresholds are worked out by hand from
  * the sources in `FINDING_KINDS` and `PROCESSES`; lengths in µm.
@@ -85,6 +101,30 @@ export const MADE_CASES: readonly Case[] = [
   // wall of 50 at a depth of 100 stands 2 to 1
   ['wall-leans', film(beside(12250)), film(beside(12249)), 100 / 49, 2],
   ['near-miss', chipOf(beside(12201)), chipOf(beside(12200.9)), 0.9e-6, 1e-6],
+  // wall of the channel at 12100, keep-out from 12600: 500 between
+  [
+    'keep-out',
+    chipOf(clamp(12600, { clearance: 500 })),
+    chipOf(clamp(12599, { clearance: 500 })),
+    499e-6,
+    500e-6,
+  ],
+  // no clearance asked: what only comes near is no fault; what touches lies in it
+  ['keep-out', chipOf(clamp(12101)), chipOf(clamp(12100)), 0, 0],
+  // an etch 30 deep adds 30 to the wall: of 530 only 500 are left
+  [
+    'keep-out',
+    made('glass-etch', {
+      ...clamp(12630, { clearance: 500 }),
+      ...layer({ depth: 30, profile: { kind: 'rounded' } }),
+    }),
+    made('glass-etch', {
+      ...clamp(12629, { clearance: 500 }),
+      ...layer({ depth: 30, profile: { kind: 'rounded' } }),
+    }),
+    499e-6,
+    500e-6,
+  ],
   // an etch 30 deep takes 30 from both sides: 60 of the wall are gone at 60
   [
     'etch-merge',

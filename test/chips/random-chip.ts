@@ -4,6 +4,7 @@ import type {
   Channel,
   Chip,
   Drive,
+  KeepOut,
   Layer,
   Limit,
   Point,
@@ -166,6 +167,24 @@ const port = (id: string, layers: readonly string[]): fc.Arbitrary<Port> =>
     { requiredKeys: ['id', 'at', 'layer', 'diameter', 'drive', 'tubing'] },
   );
 
+const keepOut = (id: string, layers: readonly string[]): fc.Arbitrary<KeepOut> =>
+  fc.record(
+    {
+      id: fc.constant(id),
+      layer: fc.constantFrom(...layers),
+      outline: fc.tuple(plan, plan, fc.integer({ min: 1, max: 1_000_000 })).map(([x, y, wide]): Point[] =>
+        [
+          [x / 2, y / 2],
+          [x / 2 + wide, y / 2],
+          [x / 2, y / 2 + 2 * wide],
+        ].map(([a, b]) => [Math.round(a!) + 0, Math.round(b!) + 0] as const),
+      ),
+      clearance: fc.oneof(fc.constant(0), length),
+      note: word,
+    },
+    { requiredKeys: ['id', 'outline', 'clearance'] },
+  );
+
 const temperature = fc.double({ min: 270, max: 380, noNaN: true });
 const fluid: fc.Arbitrary<FluidSpec> = fc.oneof(
   fc.record({
@@ -283,14 +302,15 @@ export const randomChip: fc.Arbitrary<Chip> = fc
   .tuple(
     fc.uniqueArray(word, { minLength: 2, maxLength: 3 }),
     fc.uniqueArray(word, { minLength: 4, maxLength: 12 }),
-    fc.infiniteStream(fc.nat(3)),
+    fc.infiniteStream(fc.nat(4)),
   )
   .chain(([layers, ids, picks]) => {
-    const groups: [string[], string[], string[], string[]] = [[], [], [], []];
+    const groups: [string[], string[], string[], string[], string[]] = [[], [], [], [], []];
     ids.forEach((id, i) => {
       groups[i < 2 ? 0 : i < 4 ? 3 : (picks.next().value as number)]!.push(id);
     });
-    const [channels, chambers, vias, ports] = groups;
+    const [channels, chambers, vias, ports, keepOuts] = groups;
+    const drawn = ids.filter((id) => !keepOuts.includes(id));
     return fc
       .record({
         name: word,
@@ -302,18 +322,20 @@ export const randomChip: fc.Arbitrary<Chip> = fc
         chambers: sequence(chambers, (id) => chamber(id, layers)),
         vias: sequence(vias, (id) => via(id, layers)),
         ports: sequence(ports, (id) => port(id, layers)),
+        keepOuts: sequence(keepOuts, (id) => keepOut(id, layers)),
         fluid,
         targets: fc.array(target(ports, channels), { maxLength: 3 }),
-        limits: fc.array(limit(ids, ports, layers), { maxLength: 3 }),
+        limits: fc.array(limit(drawn, ports, layers), { maxLength: 3 }),
         making,
       })
-      .map(({ making: made, ...chip }): Chip => {
+      .map(({ making: made, keepOuts: kept, ...chip }): Chip => {
         // A chamber needs a cross-section of its own: its layers are made plain.
         const held = new Set(chip.chambers.map((entry) => entry.layer));
         // Cloned, because the generator's records have no prototype.
         return structuredClone({
           ...chip,
           ...made,
+          ...(kept.length > 0 && { keepOuts: kept }),
           layers: chip.layers.map((entry) =>
             held.has(entry.id) ? { ...entry, profile: { kind: 'rectangle' } } : entry,
           ),

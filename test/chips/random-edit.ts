@@ -1,5 +1,6 @@
-import type { Channel, Chip, Port } from '../../solver/chip/chip.ts';
+import type { Channel, Chip, KeepOut, Port } from '../../solver/chip/chip.ts';
 import type { ChipEdit } from '../../solver/chip/edit.ts';
+import { LISTS, partsOf } from '../../solver/chip/schema-check.ts';
 
 /** Random numbers from a seed, 0 to below 1 (a 32-bit Weyl sequence through a mixing step). */
 export function seeded(seed: number): () => number {
@@ -13,7 +14,6 @@ export function seeded(seed: number): () => number {
 }
 
 type Change = ChipEdit['changes'][number];
-const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports'] as const;
 
 /**
  * One to four changes of every sort that may or may not fit the chip: a refused edit is part of the
@@ -43,6 +43,23 @@ export function randomEdit(chip: Chip, random: () => number, serial: number): Ch
     } else if (sort < 0.6 && channel) {
       const part = { ...channel, id: fresh };
       changes.push({ kind: 'insert', list: 'channels', index: whole(chip.channels.length + 1), part });
+    } else if (sort < 0.62) {
+      const part: KeepOut = {
+        id: random() < 0.1 ? (pick(chip.keepOuts ?? [])?.id ?? fresh) : fresh,
+        outline: [
+          [whole(1e8), whole(1e8)],
+          [1e8 + whole(1e8), whole(1e8)],
+          [whole(1e8), 2e8 + whole(1e8)],
+        ],
+        clearance: whole(2) * whole(1e6),
+        ...(random() < 0.5 && { layer: pick(chip.layers)?.id ?? 'flow' }),
+      };
+      const known = chip.keepOuts?.find(({ id }) => id === part.id);
+      changes.push(
+        known
+          ? { kind: 'put', list: 'keepOuts', id: part.id, part }
+          : { kind: 'insert', list: 'keepOuts', index: whole((chip.keepOuts?.length ?? 0) + 1), part },
+      );
     } else if (sort < 0.66 && port) {
       changes.push({
         kind: 'insert',
@@ -52,11 +69,11 @@ export function randomEdit(chip: Chip, random: () => number, serial: number): Ch
       });
     } else if (sort < 0.8) {
       const list = pick(LISTS)!;
-      const part = pick(chip[list] as readonly { readonly id: string }[]);
+      const part = pick(partsOf(chip, list));
       if (part) changes.push({ kind: 'remove', list, id: part.id });
     } else if (sort < 0.9) {
       const list = pick(LISTS)!;
-      const part = pick(chip[list] as readonly { readonly id: string }[]);
+      const part = pick(partsOf(chip, list));
       const to = random() < 0.2 ? (pick(chip.channels)?.id ?? fresh) : fresh;
       if (part) changes.push({ kind: 'rename', list, id: part.id, to });
     } else if (sort < 0.93) changes.push({ kind: 'set', key: 'note', value: `note ${serial}` });

@@ -18,6 +18,16 @@ await inFolder(async (scratch) => {
   const path = join(scratch, `${name}.chw`);
   makeFile(path, madeUpChip(6), { program: 'fixture' });
   const { project } = await openForWork(path, scratch);
+  const outline = [
+    [1_000_000, 1_000_000],
+    [5_000_000, 1_000_000],
+    [5_000_000, 4_000_000],
+  ] as const;
+  const part = { id: 'clamp', layer: 'flow', outline, clearance: 250_000, note: 'bolt head' };
+  project.edit(
+    { label: 'draw a keep-out', changes: [{ kind: 'insert', list: 'keepOuts', index: 0, part }] },
+    project.position.seq,
+  );
   workAtRandom(project, 25, 11);
   project.freezeTrial('as drawn', project.position.seq, madeUpResult(4));
   project.undo();
