@@ -39,6 +39,24 @@ test('a chip comes back from a new file as it went in', async () => {
   });
 });
 
+test('what is kept of the view comes back with the file, and is no step', async () => {
+  await withProject(3, async (project, path, folder) => {
+    const before = project.position;
+    expect(project.view).toEqual({});
+    project.keepView({ locked: ['channel:a'] });
+    project.keepView({ locked: ['channel:b', 'port:in'] });
+    expect(project.position).toEqual(before);
+    project.close();
+    const { project: again } = await openForWork(path, folder);
+    expect(again.view).toEqual({ locked: ['channel:b', 'port:in'] });
+    again.close();
+    const read = await openForReading(path);
+    expect(read.view).toEqual({ locked: ['channel:b', 'port:in'] });
+    expect(() => read.keepView({})).toThrow('reading only');
+    read.close();
+  });
+});
+
 test('steps are in the file at once, and undo and redo go on after reopening', async () => {
   await withProject(10, async (project, path, folder) => {
     const states = [canonical(project.chip)];

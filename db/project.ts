@@ -23,6 +23,7 @@ import type { Mark, Stacks } from './journal/stacks.ts';
 import { type CellEntry, Cells } from './kept/cells.ts';
 import { findResult, keepResult } from './kept/results.ts';
 import { deleteTrial, freezeTrial, getTrial, listTrials, renameTrial, type Trial } from './kept/trials.ts';
+import { findView, type KeptView, keepView } from './kept/view.ts';
 import type { Store } from './store/store.ts';
 import { projectProblem } from './words.ts';
 
@@ -171,6 +172,15 @@ export class Project {
 
   putCells(entries: readonly CellEntry[]): void {
     if (!this.readOnly) this.#do(() => this.#cells.put(entries));
+  }
+
+  /** What the page remembers of the view (locks): of the file, and not of the chip. */
+  get view(): KeptView {
+    return this.#do(() => findView(this.#store), false);
+  }
+
+  keepView(view: KeptView): void {
+    this.#do(() => keepView(this.#store, view));
   }
 
   /** Folds the steps into the chip's own rows and the log into the file, so that the bare file is whole. */

@@ -96,6 +96,8 @@ const state = z.object({
   ...standing.shape,
   ...position.shape,
   chip,
+  /** What was kept of the view with `view.keep`; empty where nothing was. */
+  view: z.record(z.string(), z.json()),
   /** What had to be done to open it (brought up from an older version, recovered after a crash), in sentences. */
   notes: z.array(z.string()),
 });
@@ -229,6 +231,8 @@ export const REQUESTS = {
    * Keeps a result with what it was made from: the chip at `seq` and the settings of the solve (any
    * text that names them). `kept` is false where the chip has moved on since.
    */
+  /** What the page remembers of the view (such as locks), with the project and not of the chip; replaced whole. */
+  'view.keep': { input: z.strictObject({ view: z.record(z.string(), json) }), output: nothing },
   'results.keep': {
     input: z.strictObject({ seq, settings: z.string().max(BOUNDS.settings), result }),
     output: z.object({ kept: z.boolean() }),

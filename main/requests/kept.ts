@@ -12,6 +12,7 @@ export const keptRequests: Handlers<
   | 'results.get'
   | 'cells.get'
   | 'cells.put'
+  | 'view.keep'
 > = {
   'trials.freeze': (session, { name, seq, result, chip }) => {
     const { workplace } = session;
@@ -43,6 +44,11 @@ export const keptRequests: Handlers<
     seq: workplace.project.position.seq,
     result: workplace.project.findResult(settings),
   }),
+  'view.keep': (session, { view }) => {
+    session.workplace.project.keepView(view);
+    session.touched();
+    return {};
+  },
   'cells.get': ({ workplace }, { keys }) => ({ found: workplace.project.getCells(keys) }),
   'cells.put': (session, { entries }) => {
     const { workplace } = session;

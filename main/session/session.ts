@@ -45,7 +45,13 @@ export class Session {
   get state(): ProjectState | null {
     if (!this.#open) return null;
     const { project, standing, notes } = this.#open;
-    return { ...standing, ...project.position, chip: project.chip, notes: [...notes] };
+    return {
+      ...standing,
+      ...project.position,
+      chip: project.chip,
+      view: { ...project.view } as ProjectState['view'],
+      notes: [...notes],
+    };
   }
 
   /** Call after every step: the file is made whole when no further one follows, and the first one is told. */

@@ -47,9 +47,19 @@ export function Card() {
       }),
     [bench],
   );
+  const before = useRef<{ readonly panel: Panel; readonly from: Element | null }>({ panel, from: null });
   useEffect(() => {
+    const { panel: last, from } = before.current;
+    if (last === panel) return;
     aside.current?.scrollTo(0, 0);
-    if (panel !== 'card') aside.current?.querySelector<HTMLElement>('h2, input, button')?.focus();
+    const now = document.activeElement;
+    // from one panel to the next the way back stays the same
+    before.current = { panel, from: last === 'card' ? now : from };
+    if (panel !== 'card') aside.current?.querySelector<HTMLElement>('h2')?.focus();
+    else if (now === document.body || now === null) {
+      const back = from instanceof HTMLElement && from !== document.body && from.isConnected ? from : null;
+      (back ?? document.querySelector<HTMLElement>('.sheet-surface'))?.focus();
+    }
   }, [panel]);
   return (
     <aside ref={aside} className="card" aria-label={panel === 'card' ? 'What is chosen' : TITLES[panel]}>
@@ -57,10 +67,17 @@ export function Card() {
         <Chosen />
       ) : (
         <>
-          <button type="button" className="back" onClick={() => desk.view.patch({ panel: 'card' })}>
-            Back to what is chosen
-          </button>
-          <h2 tabIndex={-1}>{TITLES[panel]}</h2>
+          <div className="panel-head">
+            <h2 tabIndex={-1}>{TITLES[panel]}</h2>
+            <button
+              type="button"
+              className="quiet"
+              title="Back to what is chosen (Escape)"
+              onClick={() => desk.view.patch({ panel: 'card' })}
+            >
+              Close
+            </button>
+          </div>
           <PanelBody panel={panel} />
         </>
       )}
@@ -94,6 +111,30 @@ function PanelBody({ panel }: { readonly panel: Exclude<Panel, 'card'> }) {
 }
 
 function Chosen() {
+  const { desk } = usePage();
+  const selection = useStore(desk.view, (view) => view.selection);
+  const held = useStore(desk.view, (view) => selection.filter((ref) => view.locked.has(ref)).length);
+  const unlock = (): void => {
+    const chosen = new Set(selection);
+    desk.lock(new Set([...desk.view.get().locked].filter((ref) => !chosen.has(ref))));
+  };
+  return (
+    <>
+      {held > 0 && (
+        <p className="held">
+          {held === selection.length ? 'Locked' : `${held} of ${selection.length} locked`}: neither moved nor
+          deleted.{' '}
+          <button type="button" className="quiet" onClick={unlock}>
+            Unlock
+          </button>
+        </p>
+      )}
+      <ChosenBody />
+    </>
+  );
+}
+
+function ChosenBody() {
   const { desk } = usePage();
   const chip = useStore(desk.project)!.document.chip;
   const selection = useStore(desk.view, (view) => view.selection);

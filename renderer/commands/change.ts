@@ -77,6 +77,8 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
       keys: ['Ctrl+z'],
       help: 'Take back the last change; without limit.',
       group: 'Change',
+      repeats: true,
+      of: () => desk.undoLabel(),
       why: () => (desk.undoLabel() ? null : 'Nothing was done yet.'),
       run: () => desk.undo(),
     },
@@ -86,6 +88,8 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
       keys: ['Ctrl+Shift+z', 'Ctrl+y'],
       help: 'Do again what was taken back.',
       group: 'Change',
+      repeats: true,
+      of: () => desk.redoLabel(),
       why: () => (desk.redoLabel() ? null : 'Nothing was taken back.'),
       run: () => desk.redo(),
     },
@@ -142,7 +146,7 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
       id: 'lock',
       title: 'Lock or unlock',
       keys: ['l'],
-      help: 'Hold the chosen parts where they are for this sitting, or let them go.',
+      help: 'Hold the chosen parts where they are, also when the project is opened again, or let them go.',
       group: 'Change',
       why: () => (desk.view.get().selection.length > 0 ? null : 'Choose a part first.'),
       run: () => {
@@ -153,7 +157,7 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
           if (lock) next.add(ref);
           else next.delete(ref);
         }
-        desk.view.patch({ locked: next });
+        desk.lock(next);
         desk.say(lock ? 'Locked: neither moved nor deleted until unlocked.' : 'Unlocked.');
       },
     },

@@ -9,6 +9,7 @@ import type { Solver } from '../solving/solver.ts';
 import type { Alteration } from '../tools/tool.ts';
 import { type Document, done, openDocument, redo, undo } from './document.ts';
 import { Keeper } from './keeper.ts';
+import { lockRefusal, readLocks, renamedLocks } from './locks.ts';
 import { createStore, type Store } from './store.ts';
 import { FIRST_VIEW, type View } from './view.ts';
 
@@ -50,6 +51,8 @@ export interface Desk {
   undoLabel(): string | null;
   redoLabel(): string | null;
   say(text: string): void;
+  /** Holds parts where they are, from now on and when the project is opened again. */
+  lock(locked: ReadonlySet<string>): void;
   /** Opens what a request to the host returns. */
   open(label: string, request: () => Promise<ProjectState>): Promise<void>;
   close(): Promise<void>;
@@ -110,7 +113,7 @@ export function createDesk(client: Client, solver: Solver): Desk {
     });
     view.patch({
       selection: [],
-      locked: new Set(),
+      locked: readLocks(state.view),
       tool: 'select',
       camera: null,
       layer: '',
@@ -152,17 +155,33 @@ export function createDesk(client: Client, solver: Solver): Desk {
     }
   };
 
+  const lock = (locked: ReadonlySet<string>): void => {
+    view.patch({ locked });
+    if (project.get()?.mode === 'read-only') return;
+    void keeper
+      .settled()
+      .then(() => client.call('view.keep', { view: { locked: [...locked] } }))
+      .catch((error: unknown) => say(wordsOf(error)));
+  };
+
   const attempt = (alteration: Alteration): string | null => {
     const open = project.get();
     if (!open) return 'No chip is open.';
     if (open.mode === 'read-only')
       return open.modeSays || 'This project is only to be read; save it under another name to change it.';
+    const { locked } = view.get();
+    const held = lockRefusal(open.document.chip, locked, alteration);
+    if (held !== null) return held;
     try {
       const edit = toEdit(open.document.chip, alteration);
       if (edit.changes.length === 0) return null;
       const document = done(open.document, edit);
       put(document, edit, { hostRedo: null });
       keeper.add({ kind: 'edit', edit });
+      if (alteration.rename) {
+        const follow = renamedLocks(locked, alteration.rename);
+        if (follow !== locked) lock(follow);
+      }
       return null;
     } catch (error) {
       return wordsOf(error);
@@ -176,6 +195,7 @@ export function createDesk(client: Client, solver: Solver): Desk {
     view,
     opening,
     say,
+    lock,
     chip: () => project.get()?.document.chip ?? null,
     spatial() {
       const chip = project.get()!.document.chip;

@@ -34,7 +34,7 @@ export interface FileWish {
 /** What is of the view alone: nothing of it enters the project. */
 export interface View {
   readonly selection: readonly Ref[];
-  /** Parts that the hand must not move; kept for this sitting. */
+  /** Parts that must stay where they are; kept with the project, and no part of the chip. */
   readonly locked: ReadonlySet<Ref>;
   readonly tool: ToolName;
   readonly overlay: Overlay;

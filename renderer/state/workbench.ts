@@ -34,6 +34,7 @@ export function createWorkbench(desk: Desk): Workbench {
       spatial: desk.spatial(),
       layer: layerOf(chip, view.layer),
       selection: view.selection.filter((ref) => !view.locked.has(ref)),
+      locked: view.locked,
       reach: REACH * nmPerPixel,
       grid: gridFor(nmPerPixel, 8),
       habits: view.habits,

@@ -156,6 +156,8 @@ function move(state: SelectState, event: PlaceEvent, scope: Scope): Outcome<Sele
   const { hit, from, extend } = state;
   if (!hit) return { state: { kind: 'box', from, to: event.at, extend } };
   const ref = refTo(hit.kind, hit.id);
+  // what is locked is chosen by a press, and not drawn along
+  if (scope.locked?.has(ref)) return { state };
   const refs = scope.selection.includes(ref) ? scope.selection : extend ? [...scope.selection, ref] : [ref];
   const grabbed = grab(hit, refs, from, scope);
   const state2 = grabbed.kind === 'moving' ? step(grabbed, event, scope) : grabbed;
