@@ -139,8 +139,8 @@ function SplitTreeFields({ name, wishes }: { readonly name: string; readonly wis
         label="Flow"
         value={wishes.joining ? 'joining' : 'splitting'}
         choices={[
-          ['splitting', 'from one to many'],
-          ['joining', 'from many to one'],
+          ['splitting', 'one to many'],
+          ['joining', 'many to one'],
         ]}
         onAccept={(way) => again({ ...wishes, joining: way === 'joining' })}
       />

@@ -1,7 +1,7 @@
 import { keyShown } from '../commands/command.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
-import { capital, counted, figure, lengthFigure } from '../words/figure.ts';
+import { figure, lengthFigure, tally } from '../words/figure.ts';
 import { fluidWords } from '../words/fluid.ts';
 import { Figure } from './text-field.tsx';
 
@@ -38,8 +38,8 @@ export function NothingCard() {
         </div>
       )}
       <dl className="fields">
-        <Figure label="Channels" figure={capital(counted(chip.channels.length, 'channel'))} />
-        <Figure label="Ports" figure={capital(counted(chip.ports.length, 'port'))} />
+        <Figure label="Channels" figure={tally(chip.channels.length)} />
+        <Figure label="Ports" figure={tally(chip.ports.length)} />
         {chip.layers.map((layer) => (
           <Figure
             key={layer.id}

@@ -1,3 +1,4 @@
+import { missedWords } from '../ledger/tables.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import { AcceptFinding } from './accept-finding.tsx';
@@ -16,15 +17,11 @@ export function PlaceFindings({ ids }: { readonly ids: readonly string[] }) {
   if (missed.length + findings.length === 0) return null;
   return (
     <section aria-label="Findings">
-      {missed.map((limit) => {
-        const kind = chip.limits.find((found) => found.name === limit.name);
-        return (
-          <p key={limit.name} className="finding missed">
-            {limit.name}: {limit.worst?.toPrecision(3)} {kind && 'shear' in kind ? 'Pa' : ''} where{' '}
-            {limit.limit?.toPrecision(3)} is allowed.
-          </p>
-        );
-      })}
+      {missed.map((limit) => (
+        <p key={limit.name} className="finding missed">
+          {missedWords(limit, chip)}
+        </p>
+      ))}
       {findings.map((finding, i) => (
         // biome-ignore lint/suspicious/noArrayIndexKey: two findings may be alike to the letter
         <div key={`${finding.kind} ${i}`} className="finding">

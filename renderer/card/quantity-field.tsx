@@ -90,8 +90,11 @@ export function QuantityField({ label, value, kind, unit, onAccept, onEmpty, fix
         onKeyDown={(event) => {
           if (event.key === 'Enter') accept();
           else if (event.key === 'Escape') {
+            // what was typed is given up first; with nothing typed the field is left
+            if (text === own && !fault) return;
             setText(own);
             setFault('');
+            event.preventDefault();
           } else if (event.key === 'ArrowUp') stepBy(1, event.shiftKey);
           else if (event.key === 'ArrowDown') stepBy(-1, event.shiftKey);
           else return;

@@ -84,9 +84,10 @@ export function RowsField({
         onBlur={accept}
         onKeyDown={(event) => {
           if (event.key === 'Enter' && (event.ctrlKey || event.metaKey)) accept();
-          if (event.key === 'Escape') {
+          if (event.key === 'Escape' && (text !== own || fault)) {
             setText(own);
             setFault('');
+            event.preventDefault();
           }
         }}
       />

@@ -43,7 +43,7 @@ export function SiteCard({ name }: { readonly name: string }) {
         )}
       </dl>
       {cell ? (
-        <PortMatrix faces={cell.faces} matrix={cell.portMatrix} />
+        <PortMatrix faces={faceNames(cell.faces)} matrix={cell.portMatrix} />
       ) : (
         <p className="soft">Taken as ideal: one pressure, no loss, no peak.</p>
       )}
@@ -51,6 +51,23 @@ export function SiteCard({ name }: { readonly name: string }) {
     </>
   );
 }
+
+/**
+ * Faces by the channels that they cut: "feed" of "feed#1"; where one channel is cut twice, "feed, before" and
+ * "feed, behind", in the order of its pieces.
+ */
+function faceNames(faces: readonly string[]): readonly string[] {
+  const names = faces.map(placeName);
+  return faces.map((face, i) => {
+    const name = names[i]!;
+    const alike = faces.filter((_, j) => names[j] === name);
+    if (alike.length < 2) return name;
+    const nth = [...alike].sort((a, b) => pieceOf(a) - pieceOf(b)).indexOf(face);
+    return alike.length === 2 ? `${name}, ${nth === 0 ? 'before' : 'behind'}` : `${name}, ${nth + 1}`;
+  });
+}
+
+const pieceOf = (face: string): number => Number(/#(\d+)$/.exec(face)?.[1] ?? 0);
 
 /** Flow out of each face per pressure on each; rows and columns in the order of the faces. */
 function PortMatrix({
@@ -62,10 +79,10 @@ function PortMatrix({
 }) {
   return (
     <table className="matrix">
-      <caption>Flow out of each face per pressure on each, µL/min per kPa</caption>
+      <caption>Flow out of each arm per pressure on each, µL/min per kPa</caption>
       <thead>
         <tr>
-          <th scope="col">face</th>
+          <th scope="col">arm</th>
           {faces.map((face) => (
             <th key={face} scope="col">
               {face}

@@ -32,9 +32,11 @@ export function TextField({
         onBlur={accept}
         onKeyDown={(event) => {
           if (event.key === 'Enter') accept();
-          if (event.key === 'Escape') {
+          // what was typed is given up first; with nothing typed the field is left
+          if (event.key === 'Escape' && (text !== value || fault)) {
             setText(value);
             setFault('');
+            event.preventDefault();
           }
         }}
       />

@@ -10,6 +10,10 @@ export interface Command {
   /** A short help, in place. */
   readonly help: string;
   readonly group: 'Draw' | 'Change' | 'Show' | 'Chip' | 'Program';
+  /** It goes on while its key is held down. */
+  readonly repeats?: true;
+  /** What it would be done to, read after the title: "Undo: widen 3 channels". */
+  of?(): string | null;
   /** Null where it can be done now, else why not. */
   why?(): string | null;
   run(): void | Promise<void>;
@@ -27,24 +31,53 @@ export interface Commands {
   show(ref: Ref): void;
 }
 
-/** How a pressed key is written: "Ctrl+Shift+z", "c", "Delete", "?". */
-export function keyText(event: {
+/** What of a pressed key says which one it is. */
+export interface Pressed {
   readonly key: string;
+  /** Where the key lies, whatever the layout writes on it: "KeyC", "Digit1". */
+  readonly code?: string;
   readonly ctrlKey: boolean;
   readonly metaKey: boolean;
   readonly altKey: boolean;
   readonly shiftKey: boolean;
-}): string {
+  getModifierState?(name: string): boolean;
+}
+
+/** How a pressed key is written: "Ctrl+Shift+z", "c", "Delete", "?". */
+export function keyText(event: Pressed): string {
   const name = event.key === ' ' ? 'Space' : event.key;
   const single = name.length === 1;
   const parts: string[] = [];
-  if (event.ctrlKey || event.metaKey) parts.push('Ctrl');
-  if (event.altKey) parts.push('Alt');
+  // the key for third signs comes as Ctrl and Alt together: what it writes is a sign of its own
+  const third = single && event.getModifierState?.('AltGraph') === true;
+  if ((event.ctrlKey || event.metaKey) && !third) parts.push('Ctrl');
+  if (event.altKey && !third) parts.push('Alt');
   // a sign such as "?" has its shift within it
   if (event.shiftKey && (!single || /\p{L}/u.test(name) || parts.length > 0)) parts.push('Shift');
   parts.push(single ? name.toLowerCase() : name);
   return parts.join('+');
 }
+
+/**
+ * The key as a layout of Latin letters would write it, by where it lies: for letters of another script, and
+ * for digits that a layout has with Shift alone. Null where the layout's own sign says enough.
+ */
+export function latinKeyText(event: Pressed): string | null {
+  const { key, code = '' } = event;
+  if (key.length !== 1) return null;
+  const digit = /^Digit(\d)$/.exec(code)?.[1];
+  if (digit && !/\d/.test(key)) return keyText({ ...plain(event), key: digit, shiftKey: false });
+  const letter = /^Key([A-Z])$/.exec(code)?.[1];
+  // signs of other scripts are beyond the first 128
+  return letter && key.codePointAt(0)! > 127 ? keyText({ ...plain(event), key: letter.toLowerCase() }) : null;
+}
+
+const plain = ({ ctrlKey, metaKey, altKey, shiftKey }: Pressed): Omit<Pressed, 'key'> => ({
+  ctrlKey,
+  metaKey,
+  altKey,
+  shiftKey,
+});
 
 /** How a key is shown to people. */
 export const keyShown = (key: string): string =>

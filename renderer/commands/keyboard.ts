@@ -1,6 +1,6 @@
 import type { Xy } from '../geometry/vector.ts';
 import type { Page } from '../page/context.tsx';
-import { keyText } from './command.ts';
+import { type Command, keyText, latinKeyText } from './command.ts';
 
 const ARROWS: Readonly<Record<string, Xy>> = {
   ArrowLeft: [-1, 0],
@@ -12,6 +12,9 @@ const ARROWS: Readonly<Record<string, Xy>> = {
 const types = (target: EventTarget | null): boolean =>
   target instanceof HTMLElement &&
   (target.isContentEditable || ['INPUT', 'TEXTAREA', 'SELECT'].includes(target.tagName));
+
+/** With Ctrl these are a field's own: they mean what is typed in it. */
+const OF_FIELDS = ['c', 'v', 'x', 'a', 'z', 'y'];
 
 /**
  * Keys for the whole page. In a field they are the field's; in a table arrows and Enter are the table's;
@@ -32,8 +35,14 @@ export function startKeyboard({ desk, bench, commands }: Page): () => void {
     const arrow = ARROWS[event.key];
     if (arrow && plain)
       return tell({ kind: 'arrow', direction: arrow, ...(event.shiftKey && { far: true }) });
-    if (event.key === 'Enter' && plain) return tell({ kind: 'accept' });
-    if (event.key === 'Escape') return tell({ kind: 'leave' });
+    if (event.key === 'Enter' && plain) return event.repeat || tell({ kind: 'accept' });
+    if (event.key === 'Escape') {
+      const { selection, panel } = desk.view.get();
+      // nothing is under way and nothing chosen: then what stands open at the side is left
+      if (tool === 'select' && selection.length === 0 && panel !== 'card' && !bench.preview().box)
+        return false;
+      return event.repeat || tell({ kind: 'leave' });
+    }
     if (!drawing || !plain) return false;
     if (event.key === 'Backspace') return tell({ kind: 'rub' });
     if (event.key === 'Tab' && bench.preview().readout && typing() && !event.shiftKey)
@@ -47,28 +56,47 @@ export function startKeyboard({ desk, bench, commands }: Page): () => void {
     return false;
   };
 
+  const commandOf = (event: KeyboardEvent): Command | null => {
+    const latin = latinKeyText(event);
+    return commands.forKey(keyText(event)) ?? (latin === null ? null : commands.forKey(latin));
+  };
+  /** Out of panels and notices, and at last back to the sheet. */
+  const leave = (): void => {
+    const { panel, says } = desk.view.get();
+    if (panel !== 'card') desk.view.patch({ panel: 'card' });
+    else if (says) desk.say('');
+    else document.querySelector<HTMLElement>('.sheet-surface')?.focus();
+  };
+
   const listen = (event: KeyboardEvent): void => {
     if (event.defaultPrevented || event.isComposing) return;
-    if (desk.view.get().palette || desk.view.get().files) return;
+    const { palette, files } = desk.view.get();
     const inField = types(event.target);
-    if (inField && !(event.ctrlKey || event.metaKey)) return;
-    if (inField && ['c', 'v', 'x', 'a', 'z', 'y'].includes(event.key.toLowerCase())) return;
+    const held = event.ctrlKey || event.metaKey;
+    if (palette || files) {
+      // the browser must not take for its own what is a command outside of the dialog
+      if (held && !OF_FIELDS.includes(event.key.toLowerCase()) && commandOf(event)) event.preventDefault();
+      return;
+    }
+    const key = keyText(event);
+    if (inField && key !== 'Escape') {
+      // with Ctrl a letter may be a command; arrows and the like go through the text
+      if (!held || event.key.length !== 1 || OF_FIELDS.includes(event.key.toLowerCase())) return;
+    }
     if (desk.chip() && !inField && toTool(event)) {
       event.preventDefault();
       return;
     }
-    const key = keyText(event);
-    if (key === 'Escape' && desk.chip()) {
-      if (desk.view.get().panel !== 'card') desk.view.patch({ panel: 'card' });
-      else if (desk.view.get().says) desk.say('');
+    if (key === 'Escape') {
+      if (desk.chip() && !event.repeat) leave();
       return;
     }
     // Enter and Space press what has the focus
     if (key === 'Enter' || key === 'Space' || key === 'Tab') return;
-    const command = commands.forKey(key);
+    const command = commandOf(event);
     if (!command) return;
     event.preventDefault();
-    commands.run(command.id);
+    if (!event.repeat || command.repeats) commands.run(command.id);
   };
   window.addEventListener('keydown', listen);
   return () => window.removeEventListener('keydown', listen);

@@ -1,4 +1,5 @@
 import { boxOfParts, findParts } from '../edits/parts.ts';
+import type { Box } from '../geometry/path.ts';
 import { fitted, INSET, panned, zoomed } from '../sheet/camera.ts';
 import { OVERLAYS } from '../sheet/overlay.ts';
 import { fitChip } from '../sheet/sheet.tsx';
@@ -17,6 +18,20 @@ const HELP: Readonly<Record<(typeof OVERLAYS)[number], string>> = {
   findings: 'Fill the channels that a finding names.',
 };
 
+/** The ground of a chosen junction or other place read from the drawing: a few widths of what meets there. */
+function siteBox(desk: Desk, selection: readonly string[]): Box | null {
+  const { graph } = desk.solver.solved.get();
+  const chip = desk.chip();
+  const site = graph?.sites.find((found) => selection.includes(found.name));
+  if (!site || !chip) return null;
+  const widths = chip.channels
+    .filter(({ path }) => path.some((p) => Math.hypot(p[0] - site.at[0], p[1] - site.at[1]) < 1_000_000))
+    .map(({ width }) => Math.max(...width));
+  const reach = 2.5 * Math.max(100_000, ...widths);
+  const [x, y] = site.at;
+  return { left: x - reach, right: x + reach, bottom: y - reach, top: y + reach };
+}
+
 export function showCommands(desk: Desk): Command[] {
   const open = (): string | null => (desk.chip() ? null : 'Open or begin a chip first.');
   const show = (
@@ -25,6 +40,7 @@ export function showCommands(desk: Desk): Command[] {
     keys: readonly string[],
     help: string,
     run: () => void,
+    more: Pick<Command, 'repeats'> = {},
   ): Command => ({
     id,
     title,
@@ -33,7 +49,9 @@ export function showCommands(desk: Desk): Command[] {
     group: 'Show',
     why: open,
     run,
+    ...more,
   });
+  const HELD = { repeats: true } as const;
   const zoom = (factor: number) => (): void => {
     const { camera, size } = desk.view.get();
     if (camera) desk.view.patch({ camera: zoomed(camera, size, [size.width / 2, size.height / 2], factor) });
@@ -58,7 +76,7 @@ export function showCommands(desk: Desk): Command[] {
     show('fit', 'Whole chip', ['f'], 'Show the whole chip.', () => fitChip(desk)),
     show('near', 'Near', ['n'], 'Show the chosen parts as large as they fit.', () => {
       const { selection, size } = desk.view.get();
-      const box = boxOfParts(findParts(desk.chip()!, selection));
+      const box = boxOfParts(findParts(desk.chip()!, selection)) ?? siteBox(desk, selection);
       if (!box) return fitChip(desk);
       const least = 200_000;
       const more = Math.max(least, 0.1 * Math.max(box.right - box.left, box.top - box.bottom));
@@ -70,12 +88,12 @@ export function showCommands(desk: Desk): Command[] {
         ),
       });
     }),
-    show('zoom in', 'Nearer', ['+', '='], 'Enlarge the sheet.', zoom(1.5)),
-    show('zoom out', 'Farther', ['-'], 'Make the sheet smaller.', zoom(1 / 1.5)),
-    show('pan left', 'Move the view left', ['Ctrl+ArrowLeft'], 'Move the view.', pan(120, 0)),
-    show('pan right', 'Move the view right', ['Ctrl+ArrowRight'], 'Move the view.', pan(-120, 0)),
-    show('pan up', 'Move the view up', ['Ctrl+ArrowUp'], 'Move the view.', pan(0, 120)),
-    show('pan down', 'Move the view down', ['Ctrl+ArrowDown'], 'Move the view.', pan(0, -120)),
+    show('zoom in', 'Nearer', ['+', '='], 'Enlarge the sheet.', zoom(1.5), HELD),
+    show('zoom out', 'Farther', ['-'], 'Make the sheet smaller.', zoom(1 / 1.5), HELD),
+    show('pan left', 'Move the view left', ['Ctrl+ArrowLeft'], 'Move the view.', pan(120, 0), HELD),
+    show('pan right', 'Move the view right', ['Ctrl+ArrowRight'], 'Move the view.', pan(-120, 0), HELD),
+    show('pan up', 'Move the view up', ['Ctrl+ArrowUp'], 'Move the view.', pan(0, 120), HELD),
+    show('pan down', 'Move the view down', ['Ctrl+ArrowDown'], 'Move the view.', pan(0, -120), HELD),
     ...TABS.map((tab) =>
       show(`ledger ${tab}`, `Table of ${tab}`, [], 'Go to this table below the sheet.', () => {
         desk.view.patch({ tab });

@@ -65,7 +65,11 @@ export function Ledger() {
             placeholder="Filter"
             value={words}
             onChange={(event) => setWords(event.target.value)}
-            onKeyDown={(event) => event.key === 'Escape' && setWords('')}
+            onKeyDown={(event) => {
+              if (event.key !== 'Escape' || words === '') return;
+              setWords('');
+              event.preventDefault();
+            }}
           />
           <button type="button" onClick={copy}>
             Copy table

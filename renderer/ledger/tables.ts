@@ -1,10 +1,11 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { Graph } from '../../solver/chip/graph.ts';
-import type { Making, Result } from '../../solver/chip/result.ts';
+import type { LimitResult, Making, Result } from '../../solver/chip/result.ts';
 import { pathLength } from '../geometry/path.ts';
 import { driveText } from '../sheet/words.ts';
 import type { Tab } from '../state/view.ts';
-import { placeRef } from '../verdict/answer.ts';
+import { placeName, placeRef } from '../verdict/answer.ts';
+import { limitKind } from '../verdict/cells.ts';
 import { capital, figure } from '../words/figure.ts';
 import type { Cell, Column, Row, Table } from './table.ts';
 
@@ -118,10 +119,10 @@ function channels(chip: Chip, result: Result | null): Table {
     { id: 'drop', head: 'drop', kind: 'pressure' },
     { id: 'speed', head: 'speed', kind: 'velocity' },
     { id: 'shear', head: 'peak shear', kind: 'stress' },
-    { id: 'reynolds', head: 'Re', kind: 'number' },
+    { id: 'reynolds', head: 'Re', kind: 'number', digits: 2 },
     { id: 'time', head: 'time', kind: 'time', unit: 's' },
     ...(result?.making
-      ? ([{ id: 'making', head: 'shear ± from making', kind: 'share', unit: '%', digits: 2 }] as const)
+      ? ([{ id: 'making', head: '± from making', kind: 'share', unit: '%', digits: 2 }] as const)
       : []),
   ];
   const solved = new Map(result?.channels.map((channel) => [channel.id, channel]));
@@ -154,7 +155,8 @@ function channels(chip: Chip, result: Result | null): Table {
       ref: `channel:${channel.id}`,
       cells: [
         channel.id,
-        channel.layer,
+        // of one layer there is nothing to tell
+        chip.layers.length > 1 ? channel.layer : null,
         Math.min(...channel.width) / 1e9,
         pathLength(channel.path, channel.bendRadius) / 1e9,
         flow,
@@ -206,7 +208,7 @@ function junctions(result: Result | null, graph: Graph | null): Table {
   const columns: Column[] = [
     { id: 'name', head: 'place' },
     { id: 'kind', head: 'kind' },
-    { id: 'arms', head: 'arms', kind: 'number' },
+    { id: 'arms', head: 'arms', kind: 'number', digits: 1 },
     { id: 'x', head: 'right', kind: 'length', unit: 'mm' },
     { id: 'y', head: 'up', kind: 'length', unit: 'mm' },
     { id: 'solved', head: 'taken as' },
@@ -237,6 +239,17 @@ function junctions(result: Result | null, graph: Graph | null): Table {
 
 const SEVERITY = { stop: 'stop', warn: 'take care', note: 'note' } as const;
 
+/** "Suspended cells: 2.56 Pa, at most 1.50 Pa wanted." */
+export function missedWords(
+  { name, worst, limit }: Pick<LimitResult, 'name' | 'worst' | 'limit'>,
+  chip: Chip,
+): string {
+  const given = chip.limits.find((found) => found.name === name);
+  const say = (value: number | null): string => figure(value, limitKind(given), { digits: 3 });
+  const way = given && 'floor' in given ? 'at least' : 'at most';
+  return `${capital(name)}: ${say(worst)}, ${way} ${say(limit)} wanted.`;
+}
+
 function findings(chip: Chip, result: Result | null): Table {
   const columns: Column[] = [
     { id: 'severity', head: 'weight' },
@@ -251,8 +264,8 @@ function findings(chip: Chip, result: Result | null): Table {
         ref: placeRef(limit.where, chip) ?? 'chip',
         cells: [
           'missed',
-          limit.where,
-          `The limit ${limit.name} is passed.`,
+          placeName(limit.where),
+          missedWords(limit, chip),
           'Widen it, or let less flow.',
         ] as Cell[],
         missed: [0],
@@ -261,7 +274,12 @@ function findings(chip: Chip, result: Result | null): Table {
   const rows = (result?.findings ?? []).map(
     (finding): Row => ({
       ref: placeRef(finding.where, chip) ?? 'chip',
-      cells: [SEVERITY[finding.severity], finding.where, capital(finding.says), finding.do],
+      cells: [
+        finding.accepted === undefined ? SEVERITY[finding.severity] : 'accepted',
+        placeName(finding.where),
+        capital(finding.says),
+        finding.accepted === undefined ? finding.do : `Accepted: ${finding.accepted}`,
+      ],
     }),
   );
   return { columns, rows: [...missed, ...rows] };

@@ -30,11 +30,18 @@ export function Header() {
         {keptText(project)}
       </p>
       <nav className="header-verbs" aria-label="The whole chip">
-        {['trials', 'chip', 'hand over', 'file', 'find'].map((id) => {
+        {['undo', 'trials', 'chip', 'hand over', 'file', 'find'].map((id) => {
           const command = commands.byId(id);
           const key = id === 'find' ? commands.keyOf(id) : '';
+          const of = command.of?.();
           return (
-            <button key={id} type="button" onClick={() => commands.run(id)}>
+            <button
+              key={id}
+              type="button"
+              title={`${of ? `${command.title}: ${of}` : command.help} ${keyShown(commands.keyOf(id))}`.trim()}
+              aria-disabled={command.why?.() ? true : undefined}
+              onClick={() => commands.run(id)}
+            >
               {command.title}
               {key && <kbd>{keyShown(key)}</kbd>}
             </button>
@@ -68,7 +75,10 @@ function TitleField() {
       onBlur={accept}
       onKeyDown={(event) => {
         if (event.key === 'Enter') event.currentTarget.blur();
-        if (event.key === 'Escape') setText(name);
+        if (event.key === 'Escape' && text !== name) {
+          setText(name);
+          event.preventDefault();
+        }
       }}
     />
   );

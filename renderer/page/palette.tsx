@@ -76,8 +76,14 @@ function Finder() {
               onClick={() => run(i)}
             >
               <span>
-                <strong>{command.title}</strong>
-                <span className="soft small">{why ?? command.help}</span>
+                <strong>
+                  {command.title}
+                  {command.of?.() && `: ${command.of()}`}
+                </strong>
+                <span className="soft small">
+                  {command.help}
+                  {why && <em> {why}</em>}
+                </span>
               </span>
               {commands.keyOf(command.id) && <kbd>{keyShown(commands.keyOf(command.id))}</kbd>}
             </div>

@@ -4,8 +4,8 @@ import { ChoiceField } from '../card/text-field.tsx';
 
 const WAYS = [
   ['none', 'not said'],
-  ['length', 'by a length'],
-  ['share', 'by a share'],
+  ['length', 'a length'],
+  ['share', 'a share of it'],
 ] as const;
 type Way = (typeof WAYS)[number][0];
 
@@ -32,7 +32,7 @@ export function ToleranceFields({
   return (['depth', 'width'] as const).map((key) => {
     const own = tolerance?.[key];
     const way: Way = !own ? 'none' : 'share' in own ? 'share' : 'length';
-    const label = key === 'depth' ? 'Depth off' : 'Width off';
+    const label = key === 'depth' ? 'Depth tolerance' : 'Width tolerance';
     return (
       <div key={key} className="fields">
         <ChoiceField
@@ -43,7 +43,7 @@ export function ToleranceFields({
         />
         {own && (
           <QuantityField
-            label={`${label}, at most`}
+            label={key === 'depth' ? 'Depth, ± at most' : 'Width, ± at most'}
             value={'share' in own ? own.share : own.length / 1e9}
             kind={'share' in own ? 'share' : 'length'}
             unit={'share' in own ? '%' : 'um'}

@@ -70,8 +70,9 @@ export function drawEdge(
   ctx.fillText('mm', right + 14, bottom + 1);
 }
 
-/** px that the graduated edge takes outside of the chip. */
+/** px that the graduated edge takes outside of the chip: its ticks, and where they are numbered. */
 const TICKS = 10;
+const NUMBERED = 26;
 
 /** The places of the edge itself, so that no words run across it. */
 export function takeEdge(room: Room, chip: Pick<Chip, 'outline'>, camera: Camera, size: Size): void {
@@ -84,9 +85,9 @@ export function takeEdge(room: Room, chip: Pick<Chip, 'outline'>, camera: Camera
     const to = [Math.min(size.width, x + wide), Math.min(size.height, y + high)] as const;
     if (to[0] > from[0] && to[1] > from[1]) room.fill(from[0], from[1], to[0] - from[0], to[1] - from[1]);
   };
-  fill(left, top - TICKS, right - left, TICKS + 1);
+  fill(left, top - NUMBERED, right - left, NUMBERED + 1);
   fill(left, bottom - 1, right - left, TICKS);
-  fill(left - TICKS, top, TICKS + 1, bottom - top);
+  fill(left - NUMBERED, top, NUMBERED + 1, bottom - top);
   fill(right - 1, top, TICKS, bottom - top);
 }
 

@@ -35,7 +35,7 @@ export function Legend() {
   const colours = shades(scheme(), now.ramp);
   const mark = (value: number): string => figureIn(value, unit, { digits: 3 });
   const middle = (now.from + now.to) / 2;
-  const limitAt = now.limit === null ? null : placeOn(now, now.limit) * WIDTH;
+  const limitAt = now.mark === null ? null : placeOn(now, now.mark.at) * WIDTH;
   const look = palette();
   return (
     <figure className="legend">
@@ -59,7 +59,7 @@ export function Legend() {
         <text x={0} y={20}>
           {mark(now.from)}
         </text>
-        {(limitAt === null || Math.abs(limitAt - WIDTH / 2) > 40) && (
+        {(limitAt === null || Math.abs(limitAt - WIDTH / 2) > 48) && (
           <text x={WIDTH / 2} y={20} textAnchor="middle">
             {mark(middle)}
           </text>
@@ -71,11 +71,11 @@ export function Legend() {
           <>
             <path d={`M${limitAt} -3V11`} stroke={look.ink} strokeWidth={1.5} />
             <text x={limitAt} y={-6} textAnchor="middle">
-              limit
+              {now.mark!.says}
             </text>
-            {WIDTH - limitAt > 34 && (
+            {WIDTH - limitAt > 48 && (
               <text x={limitAt} y={20} textAnchor="middle">
-                {mark(now.limit!)}
+                {mark(now.mark!.at)}
               </text>
             )}
           </>

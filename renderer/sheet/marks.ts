@@ -128,11 +128,20 @@ export function drawPortWords(
     room.fill(left - 2, second, wide + 4, LINE);
     ctx.textAlign = found === 'right' ? 'left' : found === 'left' ? 'right' : 'center';
     const at = found === 'right' ? left : found === 'left' ? left + wide : x;
-    ctx.fillStyle = missed ? palette.alarm : palette.soft;
-    ctx.fillText(figure, at, second + LINE / 2);
+    // where the edge runs under the words, a rim of ground round each sign keeps them legible
+    const say = (text: string, y: number, colour: string): void => {
+      if (!clear(found)) {
+        ctx.strokeStyle = palette.chip;
+        ctx.lineWidth = 4;
+        ctx.lineJoin = 'round';
+        ctx.strokeText(text, at, y);
+      }
+      ctx.fillStyle = colour;
+      ctx.fillText(text, at, y);
+    };
+    say(figure, second + LINE / 2, missed ? palette.alarm : palette.soft);
     ctx.font = `600 ${SIZES.label}px ${FIGURE_FACE}`;
-    ctx.fillStyle = palette.ink;
-    ctx.fillText(short, at, first + LINE / 2);
+    say(short, first + LINE / 2, palette.ink);
   }
 }
 
@@ -144,6 +153,7 @@ export function drawPlaceWords(
   size: Size,
   palette: Palette,
   room: Room,
+  edge: Room,
   spatial: Spatial,
 ): void {
   const covered = coverage(camera, size, spatial);
@@ -162,7 +172,7 @@ export function drawPlaceWords(
     const headWide = ctx.measureText(short).width;
     ctx.font = `${SIZES.label}px ${FIGURE_FACE}`;
     const wide = Math.max(headWide, ctx.measureText(rest).width);
-    const place = roomBeside(at, wide, 36, size, room, covered);
+    const place = roomBeside(at, wide, 36, size, room, edge, covered);
     if (!place) continue;
     if (Math.min(Math.abs(place.top + 36 - at[1]), Math.abs(place.top - at[1])) > 20) {
       ctx.lineWidth = 1;
@@ -201,6 +211,7 @@ function roomBeside(
   high: number,
   size: Size,
   room: Room,
+  edge: Room,
   covered: (left: number, top: number, width: number, height: number) => number,
 ): { readonly left: number; readonly top: number; readonly right: boolean } | null {
   let best: { left: number; top: number; right: boolean } | null = null;
@@ -212,7 +223,9 @@ function roomBeside(
         const top = up ? y - high - 4 - far : y + 6 + far;
         const inside = left > 4 && left + wide < size.width - 4 && top > 4 && top + high < size.height - 4;
         if (!inside || !room.free(left - 4, top - 2, wide + 8, high + 4)) continue;
-        const cost = 2 * covered(left - 4, top - 2, wide + 8, high + 4) + step;
+        // words across the graduated edge take its figures away
+        const across = edge.free(left - 4, top - 2, wide + 8, high + 4) ? 0 : 3;
+        const cost = 2 * covered(left - 4, top - 2, wide + 8, high + 4) + across + step;
         if (cost < least) {
           least = cost;
           best = { left, top, right };

@@ -35,8 +35,10 @@ export interface Shown {
   readonly from: number;
   readonly to: number;
   readonly ramp: 'amount' | 'deviation';
-  /** A limit to mark on the legend. */
+  /** The limit that holds everywhere: what is beyond it misses it. */
   readonly limit: number | null;
+  /** A limit to mark on the legend: that one, or where there is none the lowest that holds for some places. */
+  readonly mark: { readonly at: number; readonly says: string } | null;
 }
 
 const SAYS: Readonly<Record<Overlay, string>> = {
@@ -143,6 +145,7 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
       );
   }
   const limit = overlay === 'wall shear' ? shearLimit(chip) : null;
+  const mark = overlay === 'wall shear' ? markOf(limit, chip) : null;
   const places = overlay === 'wall shear' ? junctionPeaks(result) : [];
   return {
     overlay,
@@ -152,7 +155,8 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
     places,
     ramp: overlay === 'off target' ? 'deviation' : 'amount',
     limit,
-    ...range(overlay, values, places, limit, chip),
+    mark,
+    ...range(overlay, values, places, mark?.at ?? null, chip),
   };
 }
 
@@ -188,6 +192,12 @@ function shearLimit(chip: Chip): number | null {
     if ('shear' in limit && limit.where === undefined && (lowest === null || limit.shear < lowest))
       lowest = limit.shear;
   return lowest;
+}
+
+function markOf(everywhere: number | null, chip: Chip): Shown['mark'] {
+  if (everywhere !== null) return { at: everywhere, says: 'limit' };
+  const stresses = chip.limits.flatMap((limit) => ('shear' in limit ? [limit.shear] : []));
+  return stresses.length > 0 ? { at: Math.min(...stresses), says: 'limit in places' } : null;
 }
 
 /** Channels that end at a port. */

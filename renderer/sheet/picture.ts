@@ -130,7 +130,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
           const [x, y] = toScreen(camera, size, port.at);
           room.fill(x - 6, y - 6, 12, 12);
         }
-        drawPlaceWords(ctx, d.places, camera, size, look, room, d.spatial);
+        drawPlaceWords(ctx, d.places, camera, size, look, room, edge, d.spatial);
         drawPortWords(ctx, d.ports, camera, size, look, room, edge, d.spatial);
         drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, d.spatial);
         drawScaleBar(ctx, camera, size, look);

@@ -19,7 +19,7 @@ export function peakShear(result: Result): { readonly shear: number; readonly wh
 }
 
 /** What the number of a limit is: a stress, a share of a floor, a share of cells damaged, or a ratio. */
-function kindOf(limit: Limit | undefined): Kind {
+export function limitKind(limit: Limit | undefined): Kind {
   if (!limit || 'shear' in limit) return 'stress';
   return 'curve' in limit ? 'number' : 'share';
 }
@@ -31,7 +31,7 @@ export function cellsAnswer(evidence: Evidence): Answer {
   if (chip.limits.length === 0) return noLimit(result, evidence);
   const limits = chip.limits.map((limit) => ({
     limit,
-    kind: kindOf(limit),
+    kind: limitKind(limit),
     judged: result.limits.find((entry) => entry.name === limit.name),
   }));
   const missed = limits.filter(({ judged }) => judged?.met === false);

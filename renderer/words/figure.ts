@@ -85,8 +85,11 @@ const WORDS = [
   'twelve',
 ];
 
+/** A count in figures alone: "3", "12,040". */
+export const tally = (n: number): string => number(n, String(n).length);
+
 /** Small counts in words, larger ones in figures: "three", "1204". */
-export const count = (n: number): string => WORDS[n] ?? number(n, String(n).length);
+export const count = (n: number): string => WORDS[n] ?? tally(n);
 
 /** "one well", "three wells". */
 export const counted = (n: number, one: string, many = `${one}s`): string =>

@@ -71,7 +71,7 @@ test('nonsense in every field: kept, explained, never applied, never lost', asyn
       chip: async () => {
         await page.locator('.sheet-surface').first().focus();
         await page.keyboard.press('i');
-        await page.getByText('Back to what is chosen').waitFor();
+        await page.getByRole('heading', { name: 'Chip and fluid' }).waitFor();
       },
     };
     const seen: Record<string, number> = {};

@@ -22,6 +22,21 @@ const press = async (page: Page, key: string): Promise<void> => {
   await page.keyboard.press(key);
 };
 
+/** A command, found by its words as a person does. */
+const command = async (page: Page, words: string): Promise<void> => {
+  await press(page, '/');
+  await page.keyboard.type(words);
+  await page.keyboard.press('Enter');
+};
+const solved = async (page: Page, name: RegExp): Promise<void> => {
+  await demo(page, name);
+  await answered(page);
+};
+const table = async (page: Page, name: RegExp, row?: string): Promise<void> => {
+  await page.getByRole('tab', { name }).click();
+  if (row) await page.getByRole('gridcell', { name: row, exact: true }).first().click();
+};
+
 /** What is done before the picture is taken, from the start. */
 const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
   start: async (page) => {
@@ -94,6 +109,108 @@ const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
     await press(page, 'e');
     await page.getByRole('button', { name: 'Write the note' }).waitFor();
   },
+  junction: async (page) => {
+    await solved(page, /Cell loading/);
+    await page.locator('.verdict-says').nth(1).click();
+    await press(page, 'n');
+    await press(page, '9');
+    await page.waitForTimeout(1500);
+  },
+  'channel card': async (page) => {
+    await solved(page, /Cell loading/);
+    await table(page, /Channels/, 'neck');
+  },
+  'port card': async (page) => {
+    await solved(page, /Circulating/);
+    await table(page, /Ports/);
+    await page.getByRole('row').nth(1).getByRole('gridcell').first().click();
+  },
+  maker: async (page) => {
+    await empty(page);
+    await press(page, 'r');
+    const box = (await page.locator('.sheet').boundingBox())!;
+    await page.mouse.click(box.x + 300, box.y + 100);
+    await page.mouse.click(box.x + 600, box.y + 220);
+    await answered(page);
+  },
+  several: async (page) => {
+    await solved(page, /Eight-way/);
+    await press(page, 'Control+a');
+  },
+  'table of channels': async (page) => {
+    await solved(page, /Eight-way/);
+    await table(page, /Channels/);
+  },
+  'table of routes': async (page) => {
+    await solved(page, /Circulating/);
+    await table(page, /Routes/);
+  },
+  'table of junctions': async (page) => {
+    await solved(page, /Gradient/);
+    await table(page, /Junctions/);
+    await press(page, '2');
+  },
+  'table of findings': async (page) => {
+    await solved(page, /Cell loading/);
+    await table(page, /Findings/);
+    await press(page, '8');
+  },
+  'attached cells': async (page) => {
+    await solved(page, /Attached/);
+    await press(page, '5');
+  },
+  gravity: async (page) => {
+    await solved(page, /Gravity|gravity|crossing/);
+    await press(page, '7');
+  },
+  history: async (page) => {
+    await solved(page, /Eight-way/);
+    await press(page, 'Control+a');
+    for (let i = 0; i < 6; i += 1) await page.keyboard.press('ArrowRight');
+    await page.keyboard.press('Control+z');
+    await command(page, 'what was done');
+    await page.locator('.history').waitFor();
+  },
+  about: async (page) => {
+    await solved(page, /Eight-way/);
+    await command(page, 'about');
+    await page.getByText('Stands on').waitFor();
+  },
+  keys: async (page) => {
+    await solved(page, /Eight-way/);
+    await press(page, '?');
+  },
+  trials: async (page) => {
+    await solved(page, /Eight-way/);
+    await press(page, 'b');
+    await page.getByRole('button', { name: 'Keep as it stands' }).click();
+    await page
+      .getByRole('button', { name: /trial 1/ })
+      .first()
+      .click();
+    await page.getByRole('heading', { name: /Compared with/ }).waitFor();
+  },
+  files: async (page) => {
+    await solved(page, /Eight-way/);
+    await press(page, 'Control+s');
+    await page.getByLabel('File name').waitFor();
+  },
+  repeat: async (page) => {
+    await solved(page, /Eight-way/);
+    await press(page, 'Control+a');
+    await press(page, 'a');
+  },
+  'bring in': async (page) => {
+    await solved(page, /Eight-way/);
+    await command(page, 'bring in');
+  },
+  unsolvable: async (page) => {
+    await solved(page, /Cell loading/);
+    await table(page, /Ports/, 'waste');
+    await page.getByLabel('Driven by').selectOption('closed');
+    await answered(page);
+    await press(page, 'Escape');
+  },
   plots: async (page) => {
     await demo(page, /Cell loading/);
     await answered(page);
@@ -107,6 +224,11 @@ const LOOKS = [
   { name: 'dark-1440', width: 1440, height: 900, scheme: 'dark' },
   { name: 'light-1280', width: 1280, height: 720, scheme: 'light' },
   { name: 'dark-1280', width: 1280, height: 720, scheme: 'dark' },
+  /** As at 200 % zoom on 1280 by 720. */
+  { name: 'light-zoomed', width: 640, height: 360, scheme: 'light' },
+  { name: 'forced', width: 1280, height: 720, scheme: 'dark' },
+  /** All of a long card. */
+  { name: 'light-tall', width: 1280, height: 2000, scheme: 'light' },
 ] as const;
 
 for (const [state, go] of Object.entries(STATES)) {
@@ -116,11 +238,20 @@ for (const [state, go] of Object.entries(STATES)) {
     await go(sitting.page);
     for (const look of LOOKS) {
       await sitting.page.setViewportSize(look);
-      await sitting.page.emulateMedia({ colorScheme: look.scheme });
+      await sitting.page.emulateMedia({
+        colorScheme: look.scheme,
+        forcedColors: look.name === 'forced' ? 'active' : 'none',
+      });
       await sitting.page.waitForTimeout(400);
-      await sitting.page.screenshot({ path: join(FOLDER, `${state.replaceAll(' ', '-')}-${look.name}.png`) });
+      await sitting.page.screenshot({
+        path: join(FOLDER, `${state.replaceAll(' ', '-')}-${look.name}.png`),
+        fullPage: look.name === 'light-zoomed',
+      });
     }
-    console.log(`${state}: four pictures`);
+    console.log(`${state}: ${LOOKS.length} pictures`);
+  } catch (error) {
+    console.error(`${state}: ${error instanceof Error ? error.message : error}`);
+    process.exitCode = 1;
   } finally {
     await sitting.end();
   }
