@@ -47,24 +47,20 @@ function Verdict({
   readonly onCulprit: (ref: string) => void;
 }) {
   const { culprit } = answer;
+  const text = plainText(answer.says);
   const says = answer.says.map((run, i) =>
     // biome-ignore lint/suspicious/noArrayIndexKey: runs of one sentence have their place alone
     typeof run === 'string' ? <span key={i}>{run}</span> : <strong key={i}>{run.strong}</strong>,
   );
   return (
-    <article className="verdict" data-standing={answer.standing}>
+    <article className="verdict" data-standing={answer.standing} data-length={lengthOf(text)}>
       <h2 className="verdict-question">{answer.question}</h2>
       {culprit ? (
-        <button
-          type="button"
-          className="verdict-says"
-          title={plainText(answer.says)}
-          onClick={() => onCulprit(culprit)}
-        >
+        <button type="button" className="verdict-says" title={text} onClick={() => onCulprit(culprit)}>
           {says}
         </button>
       ) : (
-        <p className="verdict-says" title={plainText(answer.says)}>
+        <p className="verdict-says" title={text}>
           {says}
         </p>
       )}
@@ -72,6 +68,10 @@ function Verdict({
     </article>
   );
 }
+
+/** Long sentences are set smaller where they would not have room. */
+const lengthOf = (text: string): string | undefined =>
+  text.length > 104 ? 'very long' : text.length > 82 ? 'long' : undefined;
 
 /** Says each new set of answers once, when the hand has stopped. */
 function Announcement({ answers, busy }: { readonly answers: readonly Answer[]; readonly busy: boolean }) {
