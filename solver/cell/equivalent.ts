@@ -33,7 +33,7 @@ export interface EquivalentPeak {
   /** The true sections' peak shear over the rectangles', for the same flow; the mean over the faces. */
   readonly scale: number;
   /**
-   * Bound of the relative error: what single faces differ by, and LEAST + GROWTH (run / width)². Measured by
+   * Bound of the relative error: what single faces differ by, and LEAST + GROWTH run / width. Measured by
    * tetrahedra on bends and T junctions with fillets of 0.05 to 0.5 of the width, against the same meshes
    * with upright walls.
    */
@@ -73,8 +73,8 @@ export function equivalent(given: CellShape, where: string): Equivalent {
   };
 }
 
-const LEAST = 0.05;
-const GROWTH = 2.5;
+const LEAST = 0.03;
+const GROWTH = 1;
 /** Walls that lean further than this share of the width, or meet, were not measured. */
 const MOST_LEAN = 0.36;
 
@@ -95,7 +95,7 @@ function equivalentPeak(
   const mean = ratios.reduce((sum, ratio) => sum + ratio, 0) / ratios.length;
   if (Number.isNaN(mean)) return 'not measured';
   const spread = Math.max(...ratios.map((ratio) => Math.abs(ratio - mean)));
-  return { scale: Math.exp(mean), error: spread + LEAST + GROWTH * lean ** 2 };
+  return { scale: Math.exp(mean), error: spread + LEAST + GROWTH * Math.abs(lean) };
 }
 
 /** Least radius of the fillets at re-entrant corners: it gets less by as much as walls lean outward. */
