@@ -17,14 +17,14 @@ import type {
   Role,
   BringInSettings as Settings,
 } from '../contract/bring-in.ts';
-import { deviation } from './compare.ts';
+import { compare } from './compare.ts';
 import type { Drawing, DrawnLayer } from './drawing.ts';
 import { placed } from './frame.ts';
 import { endPorts, holePorts, roundsOf } from './ports.ts';
 import { readDrawing } from './read-drawing.ts';
-import { dropExcess } from './recognise/excess.ts';
-import { type Found, recognise, restOf, trackCourses, withoutHoles } from './recognise/layer.ts';
-import { areasOf, type Frame, layerAreas, pathsOf } from './recognise/plane.ts';
+import { type Found, recognise, trackCourses } from './recognise/layer.ts';
+import { type Frame, layerAreas, pathsOf, unitedAreas } from './recognise/plane.ts';
+import { roomsIn, withoutHoles } from './recognise/rooms.ts';
 import { suggestedRole } from './settings.ts';
 import { LIMITS, type Work } from './work.ts';
 
@@ -118,7 +118,9 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
     const options = { chordError: CHORD_ERROR, fillets: false, holes: pads.size > 0 };
     const covered = layer.covered ?? planPolygons(sound, graph(), id, options).flatMap(pathsOfPolygon);
     pictured += [...layer.ground, ...covered].reduce((sum, path) => sum + path.length, 0);
-    picture.push({ layer: id, drawn: pathData(layer.ground), made: pathData(covered) });
+    if (pictured <= MOST_PICTURED) {
+      picture.push({ layer: id, drawn: pathData(layer.ground), made: pathData(covered) });
+    }
     return {
       id,
       channelsFromPaths: layer.fromPaths,
@@ -131,7 +133,10 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
         }) => a !== b,
       ).length,
       chambers: sound.chambers.filter((chamber) => chamber.layer === id).length,
-      deviation: layer.ground.length > 0 ? (layer.fit ?? deviation(layer.ground, covered, work)) : null,
+      deviation:
+        layer.ground.length > 0
+          ? (layer.fit ?? compare(layer.ground, covered, Infinity, (share) => work.at(share)).deviation)
+          : null,
     };
   });
   return {
@@ -260,12 +265,13 @@ function makeLayer(empty: Chip, { layer, drawn }: ChipLayer, making: Making): Ma
       notes.add('open lines without a width (give one to make them channels)', `layer ${name}`, lines.length);
     }
     for (const track of tracks) {
-      for (const course of trackCourses(track, frame)) found.push({ course, into: [0, 0] });
+      for (const course of trackCourses(track, frame)) found.push({ course, into: [0, 0], area: -1 });
     }
     for (const line of widened) {
       const width = settings.lineWidth! / frame.scale;
       const widths = new Float64Array(2 * (line.vertices.length / 3)).fill(width);
-      for (const course of trackCourses({ ...line, widths }, frame)) found.push({ course, into: [0, 0] });
+      for (const course of trackCourses({ ...line, widths }, frame))
+        found.push({ course, into: [0, 0], area: -1 });
     }
   }
   const fromPaths = found.length;
@@ -279,43 +285,39 @@ function makeLayer(empty: Chip, { layer, drawn }: ChipLayer, making: Making): Ma
     );
   }
   let areas = layers.flatMap((one) => one.areas);
-  if (layers.length > 1) areas = areasOf(pathsOf(areas));
+  if (layers.length > 1) areas = unitedAreas(areas);
   const regions = pathsOf(areas);
   work.stage('recognising');
-  let ofRegions = recognise(areas, work, told);
+  const ofRegions = recognise(areas, work, (share) => told(0.7 * share));
   const ground = bodies.length > 0 ? Clipper.union(regions, bodies, FillRule.NonZero) : regions;
   if (regions.length === 0)
     return { found, fromPaths, chambers: [], ground, layer: layer.id, covered: bodies, fit: null };
-  let covered = chipPaths(empty, layer.id, ofRegions);
-  const fit = deviation(regions, covered, work);
+  const covered = chipPaths(empty, layer.id, ofRegions);
+  const { deviation: fit, off } = compare(regions, covered, EDGES, (share) => told(0.7 + 0.2 * share));
+  const rooms = roomsIn({ areas, regions, covered, off, found: ofRegions, tracks: found }, (some) =>
+    chipPaths(empty, layer.id, some),
+  );
   const chambers: Paths64 = [];
-  if (!(fit.furthest <= EDGES)) {
-    const kept = dropExcess(ofRegions, covered, regions);
-    if (kept.length < ofRegions.length || found.length > 0) {
-      covered = chipPaths(empty, layer.id, [...found, ...kept]);
+  rooms.left.forEach((area, i) => {
+    told(0.9 + (0.1 * i) / rooms.left.length);
+    const outlines = withoutHoles(area);
+    if (!outlines) notes.add('areas with too many holes to draw as chambers', `layer ${layer.id}`);
+    for (const outline of outlines ?? []) {
+      if (outlineFault(outline.map(({ x, y }): Point => [x, y])) === null) chambers.push(outline);
+      else
+        notes.add(
+          'areas whose outline touches itself',
+          `layer ${layer.id}, near x ${outline[0].x} nm, y ${outline[0].y} nm`,
+        );
     }
-    ofRegions = kept;
-    const narrowest = [...found, ...kept].reduce(
-      (least, { course }) => Math.min(least, ...course.width),
-      Infinity,
-    );
-    for (const area of restOf(regions, covered, Number.isFinite(narrowest) ? narrowest : 0)) {
-      const outlines = withoutHoles(area);
-      if (!outlines) notes.add('areas with too many holes to draw as chambers', `layer ${layer.id}`);
-      for (const outline of outlines ?? []) {
-        if (outlineFault(outline.map(({ x, y }): Point => [x, y])) === null) chambers.push(outline);
-        else
-          notes.add(
-            'areas whose outline touches itself',
-            `layer ${layer.id}, near x ${outline[0].x} nm, y ${outline[0].y} nm`,
-          );
-      }
-    }
-  }
-  const all = [...found, ...ofRegions];
+  });
+  const all = [...found, ...rooms.kept];
   // Where nothing is added to the channels, what they cover is known already.
   const exact =
-    chambers.length === 0 && found.length === 0 && all.every(({ into }) => into[0] === 0 && into[1] === 0);
+    chambers.length === 0 &&
+    found.length === 0 &&
+    rooms.kept.length === ofRegions.length &&
+    all.every(({ into }) => into[0] === 0 && into[1] === 0);
   return {
     found: all,
     fromPaths,

@@ -6,6 +6,7 @@ import { cornerPatch, discPatch, type Patch, polygonPatch, stripPatch, type Way 
 import { unite } from './geometry/union.ts';
 import type { Graph } from './graph.ts';
 import { siteCorners } from './plan-corners.ts';
+import { loneOutline } from './plan-lone.ts';
 import { unitedInParts } from './plan-parts.ts';
 import { type Drawing, drawingOf } from './read-graph-drawing.ts';
 
@@ -193,6 +194,12 @@ export function planCavities(chip: Chip, graph: Graph, layer: string, options: C
   const fillet = options.fillets ? chip.layers[layerIndex]!.fillet : 0;
   const cavities: PlanCavity[] = [];
   for (const [cavity, bodies] of [...byCavity].sort((a, b) => a[0] - b[0])) {
+    const [only] = bodies;
+    const lone = bodies.length === 1 && only!.kind === 'strip' && loneOutline(drawing, only!.channel);
+    if (lone) {
+      cavities.push({ cavity, shape: [lone] });
+      continue;
+    }
     // a cut would shorten the edges that fillets are fitted to
     const whole =
       fillet === 0 ? unitedInParts(drawing, bodies, (some) => planShape(drawing, some, 0).shapes) : undefined;

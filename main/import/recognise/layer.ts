@@ -1,10 +1,12 @@
-import { Clipper, ClipType, EndType, FillRule, JoinType, type Paths64 } from 'clipper2-ts';
+import type { Path64, Paths64 } from 'clipper2-ts';
+import type { Point } from '../../../solver/chip/chip.ts';
 import type { Track } from '../drawing.ts';
 import type { Work } from '../work.ts';
 import { type Course, coursesOf, type Step } from './courses.ts';
-import { joined } from './joints.ts';
+import { type Joined, joined } from './joints.ts';
 import { pairOf, placeOn, pointOn } from './pairs.ts';
-import { type Area, booleanAreas, type Frame, pathsOf, toNm } from './plane.ts';
+import { type Area, type Frame, toNm } from './plane.ts';
+import { ribbonStrips } from './ribbon.ts';
 import { stripsOf } from './strips.ts';
 import { triangulate } from './triangles.ts';
 import { type Wall, wallsOf } from './walls.ts';
@@ -13,27 +15,65 @@ export interface Found {
   readonly course: Course;
   /** How far either end is to be led on into a chamber, nm. */
   readonly into: readonly [number, number];
+  /** Number of the area that it is a part of, -1 where it was drawn as a path. */
+  readonly area: number;
 }
+
+/** Shapes that are kept for those like them to come: most vertices of one, and of all. */
+const KEPT_SHAPE = 1000;
+const KEPT_ALL = 300_000;
 
 /** Channels that regions are made of; what they do not cover is left to chambers. */
 export function recognise(areas: readonly Area[], work: Work, told: (share: number) => void): Found[] {
   const found: Found[] = [];
+  const known = new Map<string, Joined | null>();
+  let kept = 0;
   areas.forEach((area, i) => {
     told(i / areas.length);
-    const loops = wallsOf(area);
-    const plain = plainStrip(loops);
-    if (plain) {
-      found.push({ course: plain, into: [0, 0] });
-      return;
+    // Found about its own corner, so that shapes that are alike are found alike, wherever they lie.
+    const [{ x, y }] = area.outer;
+    const { outer, holes } = {
+      outer: shifted(area.outer, x, y),
+      holes: area.holes.map((h) => shifted(h, x, y)),
+    };
+    const size = holes.reduce((sum, hole) => sum + hole.length, outer.length);
+    const key = size <= KEPT_SHAPE ? keyOf([outer, ...holes]) : '';
+    let of = key === '' ? undefined : known.get(key);
+    if (of === undefined) {
+      of = coursesIn({ outer, holes }, work);
+      kept += size;
+      if (key !== '' && kept <= KEPT_ALL) known.set(key, of);
     }
-    const triangles = triangulate(loops, work);
-    if (!triangles) return;
-    const { courses, into } = joined(alone(stripsOf(loops.flat(), triangles)));
-    courses.forEach((course, k) => {
-      found.push({ course, into: into[k] });
+    of?.courses.forEach((course, k) => {
+      const path = course.path.map(([px, py]): Point => [px + x, py + y]);
+      found.push({ course: { ...course, path }, into: of.into[k], area: i });
     });
   });
   return found;
+}
+
+function shifted(path: Path64, x: number, y: number): Path64 {
+  return path.map((p) => ({ x: p.x - x, y: p.y - y }));
+}
+
+function keyOf(paths: Paths64): string {
+  let key = '';
+  for (const path of paths) {
+    for (const { x, y } of path) key += `${x},${y} `;
+    key += ';';
+  }
+  return key;
+}
+
+/** null where its walls cross. */
+function coursesIn(area: Area, work: Work): Joined | null {
+  const loops = wallsOf(area);
+  const plain = plainStrip(loops);
+  if (plain) return { courses: [plain], into: [[0, 0]] };
+  const ribbon = ribbonStrips(loops);
+  if (ribbon) return joined(alone(ribbon));
+  const triangles = triangulate(loops, work);
+  return triangles && joined(alone(stripsOf(loops.flat(), triangles)));
 }
 
 /** The channel that a four-sided area with a long pair of even sides is; most drawings hold many of them. */
@@ -147,51 +187,4 @@ function arcSteps(x0: number, y0: number, x1: number, y1: number, bulge: number)
     { x0, y0, x1: mx, y1: my, sweep: sweep / 2, radius },
     { x0: mx, y0: my, x1, y1, sweep: sweep / 2, radius },
   ];
-}
-
-/** What counts as ground at all, nm: thinner than twice this it is the edge of something else. */
-const THINNEST = 100;
-const THIN_SHARE = 0.03;
-const THICKEST = 3000;
-/** Chambers reach this far into the channels beside them, nm, so that no rounding parts them. */
-const OVERLAP = 8;
-
-/** The parts of `ground` that `covered` leaves, without what is only a thin edge. */
-export function restOf(ground: Paths64, covered: Paths64, narrowest: number): Area[] {
-  const left = covered.length > 0 ? Clipper.difference(ground, covered, FillRule.NonZero) : ground;
-  if (left.length === 0) return [];
-  const thin = Math.min(THICKEST, Math.max(THINNEST, THIN_SHARE * narrowest));
-  const thick = Clipper.inflatePaths(left, -thin, JoinType.Miter, EndType.Polygon, 4);
-  if (thick.length === 0) return [];
-  const again = Clipper.inflatePaths(thick, thin + OVERLAP, JoinType.Miter, EndType.Polygon, 4);
-  const grown = Clipper.inflatePaths(left, OVERLAP, JoinType.Miter, EndType.Polygon, 4);
-  const both = Clipper.intersect(again, grown, FillRule.NonZero);
-  return booleanAreas(ClipType.Intersection, both, ground);
-}
-
-/** An area as outlines without holes: cut through its holes, the parts overlapping a little. */
-export function withoutHoles(area: Area, depth = 0): Paths64 | null {
-  if (area.holes.length === 0) return [area.outer];
-  if (depth > 60) return null;
-  const box = Clipper.getBounds(area.outer);
-  const hole = Clipper.getBounds(area.holes[area.holes.length >> 1]);
-  const x = Math.round((hole.left + hole.right) / 2);
-  const out: Paths64 = [];
-  for (const [from, to] of [
-    [box.left - 1, x + OVERLAP],
-    [x - OVERLAP, box.right + 1],
-  ]) {
-    const band = [
-      { x: from, y: box.top - 1 },
-      { x: to, y: box.top - 1 },
-      { x: to, y: box.bottom + 1 },
-      { x: from, y: box.bottom + 1 },
-    ];
-    for (const part of booleanAreas(ClipType.Intersection, pathsOf([area]), [band])) {
-      const outlines = withoutHoles(part, depth + 1);
-      if (!outlines) return null;
-      out.push(...outlines);
-    }
-  }
-  return out;
 }

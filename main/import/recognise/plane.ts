@@ -10,9 +10,11 @@ import {
 } from 'clipper2-ts';
 import Flatbush from 'flatbush';
 import { arcPoints } from '../curves.ts';
-import type { DrawnLayer, Vertices } from '../drawing.ts';
+import type { DrawnLayer, Region, Vertices } from '../drawing.ts';
 import type { Work } from '../work.ts';
-import { refuseTangles } from './tangles.ts';
+import { boxAround, clusters } from './clusters.ts';
+import { plainLoop } from './plain-loop.ts';
+import { Tangles } from './tangles.ts';
 
 /** Furthest that chords lie off the arcs they stand for, nm. */
 const CHORD_ERROR = 20;
@@ -31,35 +33,71 @@ export interface Frame {
 }
 
 export function toNm(vertices: Vertices, { scale, x, y }: Frame): Float64Array {
-  return vertices.map((value, k) =>
-    k % 3 === 0 ? value * scale + x : k % 3 === 1 ? value * scale + y : value,
-  );
+  const nm = new Float64Array(vertices.length);
+  for (let k = 0; k < nm.length; k += 3) {
+    nm[k] = vertices[k] * scale + x;
+    nm[k + 1] = vertices[k + 1] * scale + y;
+    nm[k + 2] = vertices[k + 2];
+  }
+  return nm;
 }
 
 /** A loop as whole nanometres, arcs cut to chords. */
 export function pathOf(vertices: Vertices, frame: Frame): Path64 {
   const nm = toNm(vertices, frame);
-  const points: number[] = [];
+  const path: Path64 = [];
+  const inner: number[] = [];
   for (let k = 0; k < nm.length; k += 3) {
-    points.push(nm[k], nm[k + 1], 0);
+    path.push({ x: Math.round(nm[k]), y: Math.round(nm[k + 1]) });
     if (nm[k + 2] === 0) continue;
     const next = (k + 3) % nm.length;
-    arcPoints(nm[k], nm[k + 1], nm[next], nm[next + 1], nm[k + 2], CHORD_ERROR, points);
+    inner.length = 0;
+    arcPoints(nm[k], nm[k + 1], nm[next], nm[next + 1], nm[k + 2], CHORD_ERROR, inner);
+    for (let i = 0; i < inner.length; i += 3)
+      path.push({ x: Math.round(inner[i]), y: Math.round(inner[i + 1]) });
   }
-  const path: Path64 = [];
-  for (let k = 0; k < points.length; k += 3)
-    path.push({ x: Math.round(points[k]), y: Math.round(points[k + 1]) });
   return path;
 }
 
 /** The union of a layer's closed regions, and how many outlines were taken as walls inside others. */
 export function layerAreas(layer: DrawnLayer, frame: Frame, work: Work): { areas: Area[]; posts: number } {
-  const drawn = layer.regions.map(({ loops }) => loops.map((loop) => pathOf(loop, frame)));
-  refuseTangles(drawn.flat(), `layer ${layer.name}`, work);
+  const drawn = layer.regions.map(({ loops }, i) => {
+    work.at((0.3 * i) / layer.regions.length);
+    return loops.map((loop) => pathOf(loop, frame));
+  });
+  const tangles = new Tangles(`layer ${layer.name}`, work);
+  const areas: Area[] = [];
+  let posts = 0;
+  const groups = clusters(drawn.map(boxAround));
+  groups.forEach((group, g) => {
+    const told = (share: number): void => work.at(0.3 + (0.7 * (g + share)) / groups.length);
+    told(0);
+    const alone = group.length === 1 && drawn[group[0]].length === 1 ? plainLoop(drawn[group[0]][0]) : null;
+    if (alone) {
+      areas.push({ outer: alone, holes: [] });
+      return;
+    }
+    const paths = group.map((i) => drawn[i]);
+    tangles.count(paths.flat());
+    const regions = group.map((i) => layer.regions[i]);
+    const united = unitedRegions(regions, paths, work, told);
+    for (const area of united.areas) areas.push(area);
+    posts += united.posts;
+  });
+  return { areas, posts };
+}
+
+/** The union of regions that may touch, given as paths. */
+function unitedRegions(
+  regions: readonly Region[],
+  drawn: readonly Paths64[],
+  work: Work,
+  told: (share: number) => void,
+): { areas: Area[]; posts: number } {
   const plain: Paths64 = [];
   const nesting: Paths64 = [];
-  layer.regions.forEach(({ fill, nests }, i) => {
-    work.at((0.5 * i) / layer.regions.length);
+  regions.forEach(({ fill, nests }, i) => {
+    told((0.4 * i) / regions.length);
     const paths = drawn[i];
     if (nests) nesting.push(positive(paths[0]));
     else if (paths.length === 1 && fill === 'non-zero') plain.push(positive(paths[0]));
@@ -70,10 +108,17 @@ export function layerAreas(layer: DrawnLayer, frame: Frame, work: Work): { areas
   levels.forEach((level, depth) => {
     if (depth % 2 === 0) all = Clipper.union([...all, ...level], FillRule.NonZero);
     else all = Clipper.difference(all, level, FillRule.NonZero);
-    work.at(0.5 + (0.4 * depth) / levels.length);
+    told(0.4 + (0.5 * depth) / levels.length);
   });
   const posts = levels.reduce((sum, level, depth) => sum + (depth % 2 === 1 ? level.length : 0), 0);
   return { areas: areasOf([...all, ...plain]), posts };
+}
+
+/** The union of areas; those that touch no other stay as they are. */
+export function unitedAreas(areas: readonly Area[]): Area[] {
+  return clusters(areas.map(({ outer }) => boxAround([outer]))).flatMap((group) =>
+    group.length === 1 ? [areas[group[0]]] : areasOf(pathsOf(group.map((i) => areas[i]))),
+  );
 }
 
 function positive(path: Path64): Path64 {

@@ -169,7 +169,8 @@ function hardStrip(
   return stripOn(axis, low, high, wide);
 }
 
-function stripOn(axis: Axis, from: number, to: number, wide: number): Strip | null {
+/** The stretch of an axis between two places; null where it is too short to be one. */
+export function stripOn(axis: Axis, from: number, to: number, wide: number): Strip | null {
   const length = lengthOn(axis, from, to);
   if (length < SHORTEST * wide && axis.kind === 'line') return null;
   const end = (s: number, sign: 1 | -1): StripEnd => {
