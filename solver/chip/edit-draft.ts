@@ -222,7 +222,8 @@ export class EditDraft {
     }
     const before = this.#chip;
     // A limit of the layer would become one of the part that bears the name.
-    if (list === 'layers' && borne(before, to) && before.limits.some(({ where }) => where === id)) {
+    const limited = list === 'layers' && !borne(before, id) && before.limits.some(({ where }) => where === id);
+    if (limited && borne(before, to)) {
       throw this.#present(list, to, start);
     }
     // What already names `to` would follow the new owner back to the old id on undoing.

@@ -126,6 +126,13 @@ describe('one edit', () => {
     expect(port.limits[1]).toBe(CHIP.limits[1]);
   });
 
+  test('a layer that takes the name of a limited channel, and leaves its own to another, gets it back', () => {
+    const chip = applyEdit(CHIP, edit({ kind: 'rename', list: 'channels', id: 'a', to: 'flow' }));
+    const made = makeEdit(chip, edit({ kind: 'rename', list: 'layers', id: 'flow', to: 'b' }));
+    expect(made.chip.limits[1]).toBe(CHIP.limits[1]);
+    expect(applyEdit(made.chip, made.inverse)).toStrictEqual(chip);
+  });
+
   const REFUSED: [name: string, changes: ChipEdit['changes'], where: string, what: RegExp][] = [
     [
       'removing what is not there',
