@@ -172,7 +172,7 @@ test('an etch that eats up a fillet leaves a sharp corner, which has no peak', (
   const etched = (fillet: number) => solveCell({ ...bend(0.2, fillet), profile: { kind: 'rounded' } });
   expect(etched(0.19)).toMatchObject({ leansSharp: true, peakError: null });
   expect(etched(0.25).leansSharp).toBe(false);
-  expect(etched(0.25).peakError).toBeGreaterThan(0.2);
+  expect(etched(0.25).peakError).toBeGreaterThan(0.18);
   // Walls that lean inward widen every fillet.
   const leaning = solveCell({ ...bend(0.2, 0.05), profile: { kind: 'trapezoid', wallAngle: 75 } });
   expect(leaning.leansSharp).toBe(false);
