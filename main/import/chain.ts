@@ -14,7 +14,7 @@ export function chainLines(layer: DrawnLayer, gathering: Gathering): void {
   const nodes = new Nodes(extent(lines) * JOIN, lines[0].vertices[0], lines[0].vertices[1]);
   const from = new Int32Array(lines.length);
   const to = new Int32Array(lines.length);
-  const seen = new Set<string>();
+  const seen = new Set<number>();
   const used = new Uint8Array(lines.length);
   lines.forEach(({ vertices }, i) => {
     const last = vertices.length - 3;
@@ -22,8 +22,9 @@ export function chainLines(layer: DrawnLayer, gathering: Gathering): void {
     to[i] = nodes.at(vertices[last], vertices[last + 1]);
     // The same line drawn twice is one.
     if (vertices.length > 6) return;
-    const key = `${Math.min(from[i], to[i])} ${Math.max(from[i], to[i])} ${Math.abs(vertices[2])}`;
-    if (vertices[2] === 0 && seen.has(key)) used[i] = 1;
+    if (vertices[2] !== 0) return;
+    const key = Math.min(from[i], to[i]) * ROW + Math.max(from[i], to[i]);
+    if (seen.has(key)) used[i] = 1;
     seen.add(key);
   });
   const ends: number[][] = Array.from({ length: nodes.count }, () => []);
@@ -44,9 +45,10 @@ export function chainLines(layer: DrawnLayer, gathering: Gathering): void {
       forward.push(from[line] === node);
       node = from[line] === node ? to[line] : from[line];
       if (node === start) return { closed: true, parts, forward };
-      const next = ends[node].filter((other) => !used[other]);
-      if (ends[node].length !== 2 || next.length !== 1) return { closed: false, parts, forward };
-      line = next[0];
+      const [a, b] = ends[node];
+      if (ends[node].length !== 2 || (used[a] === 1) === (used[b] === 1))
+        return { closed: false, parts, forward };
+      line = used[a] ? b : a;
     }
   };
   // Open chains first, from where they begin; what is left then goes round.
@@ -57,12 +59,16 @@ export function chainLines(layer: DrawnLayer, gathering: Gathering): void {
   for (let i = 0; i < lines.length; i += 1) if (!used[i]) keep(walk(i, from[i]));
 
   function keep({ closed, parts, forward }: ReturnType<typeof walk>): void {
-    const vertices: number[] = [];
-    parts.forEach((part, k) => {
+    const taken = parts.map((part, k) => {
       const own = forward[k] ? lines[part].vertices : turned(lines[part].vertices);
-      vertices.push(...(k === parts.length - 1 && !closed ? own : own.subarray(0, -3)));
+      return k === parts.length - 1 && !closed ? own : own.subarray(0, -3);
     });
-    const whole = Float64Array.from(vertices);
+    const whole = new Float64Array(taken.reduce((sum, own) => sum + own.length, 0));
+    let at = 0;
+    for (const own of taken) {
+      whole.set(own, at);
+      at += own.length;
+    }
     if (closed) layer.regions.push({ loops: [whole], ...OUTLINE });
     else layer.lines.push({ vertices: whole, closed: false, widths: new Float64Array(0) });
   }
@@ -96,6 +102,9 @@ function extent(lines: readonly Track[]): number {
 
 /** Cells in a row of the grid below: more than an extent holds, and products stay whole. */
 const ROW = 2 ** 24;
+/** Size of a cell in tolerances. */
+const CELL = 16;
+const NONE: readonly number[] = [];
 
 /** Points that are one where they lie closer than a tolerance. */
 class Nodes {
@@ -118,10 +127,13 @@ class Nodes {
 
   at(x: number, y: number): number {
     const t = this.#tolerance;
-    const [cx, cy] = [Math.floor((x - this.#x0) / t), Math.floor((y - this.#y0) / t)];
-    for (let i = cx - 1; i <= cx + 1; i += 1) {
-      for (let j = cy - 1; j <= cy + 1; j += 1) {
-        for (const node of this.#cells.get(i * ROW + j) ?? []) {
+    const [u, v] = [(x - this.#x0) / (CELL * t), (y - this.#y0) / (CELL * t)];
+    // Only a point near the edge of its cell can have a neighbour in the next one.
+    const [left, right] = [Math.floor(u - 1 / CELL), Math.floor(u + 1 / CELL)];
+    const [low, high] = [Math.floor(v - 1 / CELL), Math.floor(v + 1 / CELL)];
+    for (let i = left; i <= right; i += 1) {
+      for (let j = low; j <= high; j += 1) {
+        for (const node of this.#cells.get(i * ROW + j) ?? NONE) {
           if (Math.hypot(this.#x[node] - x, this.#y[node] - y) <= t) return node;
         }
       }
@@ -129,9 +141,10 @@ class Nodes {
     const node = this.#x.length;
     this.#x.push(x);
     this.#y.push(y);
-    const cell = this.#cells.get(cx * ROW + cy);
+    const key = Math.floor(u) * ROW + Math.floor(v);
+    const cell = this.#cells.get(key);
     if (cell) cell.push(node);
-    else this.#cells.set(cx * ROW + cy, [node]);
+    else this.#cells.set(key, [node]);
     return node;
   }
 }

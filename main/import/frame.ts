@@ -78,7 +78,7 @@ export function boxOf(layers: readonly DrawnLayer[]): Box | null {
   const add = (vertices: Vertices): void => {
     const count = vertices.length / 3;
     for (let i = 0; i < count; i += 1) {
-      const [x, y, bulge] = vertices.subarray(3 * i, 3 * i + 3);
+      const [x, y, bulge] = [vertices[3 * i], vertices[3 * i + 1], vertices[3 * i + 2]];
       grow(box, x, y);
       if (bulge === 0) continue;
       // The crown of the arc: enough for the circles and rounded ends that edges have.

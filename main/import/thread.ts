@@ -6,8 +6,8 @@ import type { FromImport, ImportJob } from './worker.ts';
 
 /** Most that the thread of one drawing may take, MB; beyond it the drawing is refused, and only it. */
 const MEMORY = 300;
-/** Room for what lives shortly, MB: most of what unions make does. */
-const YOUNG = 64;
+/** Room for what lives shortly, MB: most of what is made does, and in a small room it would be moved about before it goes. */
+const YOUNG = 144;
 
 export type Ended = Exclude<FromImport, { kind: 'step' }> | { readonly kind: 'cancelled' };
 
@@ -39,12 +39,15 @@ export function startImport(job: ImportJob, onStep: (part: number, says: string)
     resourceLimits: { maxOldGenerationSizeMb: MEMORY, maxYoungGenerationSizeMb: YOUNG },
   });
   let cancelled = false;
+  let told = 0;
   const ended = new Promise<Ended>((done) => {
     worker.on('message', (message: FromImport) => {
       if (message.kind !== 'step') done(message);
       else {
         const [from, size] = PARTS[message.stage];
-        onStep(from + size * message.share, WORDS[message.stage]);
+        // Layers come one after another, each with all stages: what is told goes on only.
+        told = Math.max(told, from + size * message.share);
+        onStep(told, WORDS[message.stage]);
       }
     });
     worker.on('error', (error: NodeJS.ErrnoException) => {

@@ -1,6 +1,6 @@
 import { ellipsePoints } from '../curves.ts';
 import { EVEN_ODD, type Vertices } from '../drawing.ts';
-import { type Entity, numberFrom } from './pairs.ts';
+import type { Entity } from './pairs.ts';
 import { arcVertices, type Drawn } from './shapes.ts';
 
 const DEGREE = Math.PI / 180;
@@ -16,15 +16,14 @@ class Groups {
   }
 
   take(code: number): number {
-    const { codes, values, line } = this.#entity;
     const k = this.#k;
-    if (codes[k] !== code) throw new Unlike();
+    if (this.#entity.code(k) !== code) throw new Unlike();
     this.#k += 1;
-    return numberFrom(values[k], line + 2 * k + 3, code);
+    return this.#entity.number(k);
   }
 
   maybe(code: number, fallback: number): number {
-    return this.#entity.codes[this.#k] === code ? this.take(code) : fallback;
+    return this.#entity.code(this.#k) === code ? this.take(code) : fallback;
   }
 }
 
@@ -33,7 +32,7 @@ class Unlike extends Error {}
 
 /** Boundaries of a filled area; those with splines are not read. */
 export function hatch(entity: Entity): Drawn {
-  const start = entity.codes.indexOf(91);
+  const start = entity.find(91);
   if (start < 0) return { not: 'hatches without a boundary' };
   try {
     const groups = new Groups(entity, start);

@@ -115,7 +115,7 @@ function takeEntity(pairs: Pairs, into: Entity[], work: Work): boolean {
   if (pairs.code !== 0) return pairs.next();
   const { entity, more } = readEntity(pairs);
   work.entity(`line ${entity.line}`);
-  work.group(entity.codes.length, `line ${entity.line}`);
+  work.group(entity.count, `line ${entity.line}`);
   work.at(pairs.share * 0.6);
   into.push(entity);
   return more;
@@ -195,7 +195,7 @@ class Placer {
 
   /** The entity's own axes in the plan, null where they do not lie in it. */
   #ocs(entity: Entity, where: string): Affine | null {
-    if (!entity.codes.includes(230) || entity.type === 'LINE' || entity.type === 'ELLIPSE') return SAME;
+    if (entity.find(230) < 0 || entity.type === 'LINE' || entity.type === 'ELLIPSE') return SAME;
     const [x, y, z] = [numberOf(entity, 210, 0), numberOf(entity, 220, 0), numberOf(entity, 230, 1)];
     if (Math.abs(x) < 1e-9 && Math.abs(y) < 1e-9) return z < 0 ? scaling(-1, 1) : SAME;
     this.#to.note(`${entity.type} tilted out of the plan`, where);

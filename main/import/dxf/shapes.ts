@@ -1,6 +1,6 @@
 import { ellipsePoints, nurbsPoints } from '../curves.ts';
 import { circle, type Region, type Track, type Vertices } from '../drawing.ts';
-import { type Entity, needed, numberFrom, numberOf, numbersOf } from './pairs.ts';
+import { type Entity, needed, numberOf, numbersOf } from './pairs.ts';
 
 /** What one entity draws in its own coordinates, or in words why it is not understood. */
 export type Drawn =
@@ -113,25 +113,24 @@ function spline(entity: Entity): Drawn {
 }
 
 function lightPolyline(entity: Entity): Drawn {
-  const { codes, values, line: start } = entity;
   const vertices: number[] = [];
   const widths: number[] = [];
   let constant = 0;
   let flags = 0;
-  codes.forEach((code, k) => {
-    const at = start + 2 * k + 3;
+  for (let k = 0; k < entity.count; k += 1) {
+    const code = entity.code(k);
     const last = vertices.length - 3;
-    if (code === 70) flags = numberFrom(values[k], at, code);
-    else if (code === 43) constant = numberFrom(values[k], at, code);
+    if (code === 70) flags = entity.number(k);
+    else if (code === 43) constant = entity.number(k);
     else if (code === 10) {
-      vertices.push(numberFrom(values[k], at, code), Number.NaN, 0);
+      vertices.push(entity.number(k), Number.NaN, 0);
       widths.push(constant, constant);
-    } else if (last < 0) return;
-    else if (code === 20) vertices[last + 1] = numberFrom(values[k], at, code);
-    else if (code === 42) vertices[last + 2] = numberFrom(values[k], at, code);
-    else if (code === 40) widths[widths.length - 2] = numberFrom(values[k], at, code);
-    else if (code === 41) widths[widths.length - 1] = numberFrom(values[k], at, code);
-  });
+    } else if (last < 0) continue;
+    else if (code === 20) vertices[last + 1] = entity.number(k);
+    else if (code === 42) vertices[last + 2] = entity.number(k);
+    else if (code === 40) widths[widths.length - 2] = entity.number(k);
+    else if (code === 41) widths[widths.length - 1] = entity.number(k);
+  }
   return polyline(vertices, widths, (flags & 1) === 1);
 }
 
