@@ -100,6 +100,8 @@ const state = z.object({
   view: z.record(z.string(), z.json()),
   /** What had to be done to open it (brought up from an older version, recovered after a crash), in sentences. */
   notes: z.array(z.string()),
+  /** Grows by one with every project that this window opens. */
+  opening: z.int().nonnegative(),
 });
 export type ProjectState = z.infer<typeof state>;
 
@@ -378,8 +380,8 @@ export const REQUESTS = {
 export const EVENTS = {
   /** The project's place, mode or name changed. */
   project: standing,
-  /** The host opened another project in this window (file association, menu, second start). */
-  opened: z.object({ state }),
+  /** The host opened another project in this window (start, file association, menu): ask for its state. */
+  opened: z.object({ opening: z.int().nonnegative() }),
   /** A command chosen in the system's menu, by the page's name for it. */
   command: z.object({ name: z.string() }),
   /** Something went wrong that no request waits for. */

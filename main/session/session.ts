@@ -16,6 +16,7 @@ export class Session {
   #open: Workplace | null = null;
   /** What the host and the page were last told of whether anything was done. */
   #toldEdited = false;
+  #opening = 0;
 
   constructor(settings: SessionSettings, send: (name: string, data: unknown) => void) {
     this.settings = settings;
@@ -51,6 +52,7 @@ export class Session {
       chip: project.chip,
       view: { ...project.view } as ProjectState['view'],
       notes: [...notes],
+      opening: this.#opening,
     };
   }
 
@@ -82,7 +84,7 @@ export class Session {
       const state = /\.json$/i.test(path)
         ? await this.draft(readDescription(await readText(path), basename(path, extname(path))))
         : await this.open(path);
-      this.emit('opened', { state });
+      this.emit('opened', { opening: state.opening });
     } catch (error) {
       this.emit('problem', refusal(error));
     }
@@ -110,6 +112,7 @@ export class Session {
   async #take(next: Workplace): Promise<ProjectState> {
     const before = this.#open;
     this.#open = next;
+    this.#opening += 1;
     await before?.close();
     await this.#noteRecent();
     this.#tell();

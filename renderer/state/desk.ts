@@ -99,6 +99,8 @@ export function createDesk(client: Client, solver: Solver): Desk {
 
   const show = (state: ProjectState): void => {
     keeper.start(state.seq);
+    // first, so that it is solved while the page is drawn
+    solver.load(state.chip, {});
     project.set({
       document: openDocument(state.chip),
       name: state.name,
@@ -120,7 +122,6 @@ export function createDesk(client: Client, solver: Solver): Desk {
       panel: 'card',
       says: [state.mode === 'draft' ? '' : state.modeSays, ...state.notes].filter(Boolean).join(' '),
     });
-    solver.load(state.chip, {});
   };
 
   const put = (document: Document, edit: ChipEdit, more: Partial<Project> = {}): void => {

@@ -1,0 +1,49 @@
+import { createRoot } from 'react-dom/client';
+import type { Client } from '../../main/contract/client.ts';
+import type { ProjectState } from '../../main/contract/contract.ts';
+import { createCommands } from '../commands/commands.ts';
+import { startKeyboard } from '../commands/keyboard.ts';
+import { chooseScheme } from '../look/theme.ts';
+import type { Solver } from '../solving/solver.ts';
+import { createDesk } from '../state/desk.ts';
+import { followHand } from '../state/live.ts';
+import { followOpenings } from '../state/openings.ts';
+import { createPreferences } from '../state/preferences.ts';
+import { createWorkbench } from '../state/workbench.ts';
+import { App } from './app.tsx';
+import { PageContext } from './context.tsx';
+
+/** ms that the first picture waits for the host, so that it is of the project and in the person's own units. */
+const PATIENCE = 250;
+
+/** Joins everything to one page and puts it on the screen. `first` is what the window has open already. */
+export function showPage(client: Client, solver: Solver, first: Promise<ProjectState | null>): void {
+  const desk = createDesk(client, solver);
+  const bench = createWorkbench(desk);
+  const preferences = createPreferences(client);
+  const commands = createCommands(desk, bench, () => preferences.store.get().keys);
+  const page = { desk, bench, commands, preferences };
+  const known = preferences
+    .read()
+    .then(() => chooseScheme(preferences.store.get().scheme))
+    .catch(() => undefined);
+  const opened = followOpenings(client, desk, first);
+  client.on('project', (standing) => desk.stand(standing));
+  client.on(
+    'command',
+    ({ name }) => commands.all.some((command) => command.id === name) && commands.run(name),
+  );
+  client.on('problem', ({ what, remedy }) => desk.say(`${what} ${remedy}`));
+  client.on('closing', ({ says }) => desk.say(says));
+  startKeyboard(page);
+  followHand(desk, bench);
+
+  const late = new Promise((done) => setTimeout(done, PATIENCE));
+  void Promise.race([Promise.all([known, opened]), late]).then(() =>
+    createRoot(document.getElementById('page')!).render(
+      <PageContext value={page}>
+        <App />
+      </PageContext>,
+    ),
+  );
+}
