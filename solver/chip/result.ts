@@ -114,6 +114,11 @@ export interface PieceResult {
   readonly accuracy?: number;
   /** Of its flow, of the share that is of all that enters, and of peak wall shear. */
   readonly making?: { readonly flow: Making; readonly share: Making; readonly shear: Making };
+  /**
+   * Relative errors of its flow, of its share of all that enters, and of its wall shear, as `Bands`; absent in
+   * large chips, where those of the chip stand for all.
+   */
+  readonly band?: { readonly flow: number; readonly share: number; readonly shear: number };
 }
 
 export interface CellResult {
@@ -134,6 +139,8 @@ export interface CellResult {
   readonly peakError?: number;
   /** Of the peak, as of the channels around the cell. */
   readonly making?: Making;
+  /** Relative error of the peak, flows around it included; absent as for pieces. */
+  readonly band?: { readonly shear: number };
   /** Where limits are given: the fastest stretching inside, and viscous dissipation per volume, W/m^3. */
   readonly stretch?: StretchResult;
   readonly dissipation?: { readonly mean: number; readonly peak: number | null };

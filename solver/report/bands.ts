@@ -1,14 +1,19 @@
-import type { Bands, CellResult, PortResult } from '../chip/result.ts';
+import type { Bands, CellResult, PieceResult, PortResult } from '../chip/result.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { Lumped } from '../lump/lump.ts';
 import type { Gradient, Target } from '../network/sensitivity.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import { blockErrors, ductErrors, type Parts } from './part-errors.ts';
 
-/** How far the numbers may be off: the chip's worst, and those of each port, null where it takes no flow. */
+/**
+ * How far the numbers may be off: the chip's worst, and those of each port, piece (in the order of stretches)
+ * and cell, null where it takes no flow. Pieces and cells of large chips have none of their own.
+ */
 export interface ErrorBands {
   readonly chip: Bands;
   readonly ports: readonly (NonNullable<PortResult['band']> | null)[];
+  readonly pieces: readonly (NonNullable<PieceResult['band']> | null)[];
+  readonly cells: readonly (NonNullable<CellResult['band']> | null)[];
 }
 
 export interface Solved extends Parts {
@@ -19,6 +24,8 @@ export interface Solved extends Parts {
 
 /** Ports times ducts beyond which bands would cost more than the answer. */
 const MOST_WORK = 2e6;
+/** Stretches beyond which pieces have the chip's worst band in place of their own. */
+const MOST_PIECES = 128;
 /** Of all that enters: less than this is a trickle. */
 const TRICKLE = 1e-6;
 /** Errors below a millionth are round-off, and of no use to anybody. */
@@ -34,13 +41,22 @@ export function bandsOf(
   solved: Solved,
   depends: (targets: readonly Target[]) => Gradient[] | null,
 ): ErrorBands | null {
-  const { lumped, flow, ports, cells, fluid } = solved;
+  const { lumped, flow, ports, pieces, cells, fluid } = solved;
   const drives = ports.flatMap(({ flow: q }, port) =>
     q !== null && q !== 0 && lumped.portDrive[port] >= 0 ? [{ port, drive: lumped.portDrive[port], q }] : [],
   );
   if (drives.length === 0 || drives.length * lumped.spec.resistance.length > MOST_WORK) return null;
-  const found = depends(drives.map(({ drive }): Target => ({ of: 'drive', index: drive })));
-  if (!found) return null;
+  const { stretches } = lumped;
+  const streams = stretches.flatMap((_, e) => {
+    const q = pieces[e].flow;
+    return stretches.length <= MOST_PIECES && q !== null && q !== 0 ? [{ e, q }] : [];
+  });
+  const all = depends([
+    ...drives.map(({ drive }): Target => ({ of: 'drive', index: drive })),
+    ...streams.map(({ e }): Target => ({ of: 'duct', index: e })),
+  ]);
+  if (!all) return null;
+  const found = all.slice(0, drives.length);
   const ducts = ductErrors(solved);
   const blocks = blockErrors(solved);
   const entering = drives.reduce((sum, { q }) => sum + Math.max(0, q), 0);
@@ -60,21 +76,22 @@ export function bandsOf(
   const mixed = new Float64Array(whole.weight.length);
   const adjoint = new Float64Array(blocks.length);
   const own = ports.map((): NonNullable<PortResult['band']> | null => null);
-  found.forEach(({ byResistance, weight }, i) => {
+  /** Of a flow q, or of its share of all that enters. */
+  const bandOf = ({ byResistance, weight }: Gradient, q: number, less: 0 | 1): number => {
+    let off = 0;
+    for (let e = 0; e < ducts.length; e += 1) {
+      off += ducts[e] * Math.abs(byResistance[e] / q - less * whole.byResistance[e]);
+    }
+    // Where a cell's matrix A is off by no more than a share of its energy, |λ·δA·p| ≤ share √(λ·A·λ) √(p·A·p).
+    for (let node = 0; node < mixed.length; node += 1)
+      mixed[node] = weight[node] / q - less * whole.weight[node];
+    blockPowers(lumped, mixed, adjoint);
+    for (let b = 0; b < blocks.length; b += 1) off += blocks[b] * Math.sqrt(adjoint[b] * powers[b]);
+    return told(off);
+  };
+  found.forEach((gradient, i) => {
     const { port, q } = drives[i];
-    const band = (less: 0 | 1): number => {
-      let off = 0;
-      for (let e = 0; e < ducts.length; e += 1) {
-        off += ducts[e] * Math.abs(byResistance[e] / q - less * whole.byResistance[e]);
-      }
-      // Where a cell's matrix A is off by no more than a share of its energy, |λ·δA·p| ≤ share √(λ·A·λ) √(p·A·p).
-      for (let node = 0; node < mixed.length; node += 1)
-        mixed[node] = weight[node] / q - less * whole.weight[node];
-      blockPowers(lumped, mixed, adjoint);
-      for (let b = 0; b < blocks.length; b += 1) off += blocks[b] * Math.sqrt(adjoint[b] * powers[b]);
-      return told(off);
-    };
-    own[port] = { flow: band(0), share: band(1) };
+    own[port] = { flow: bandOf(gradient, q, 0), share: bandOf(gradient, q, 1) };
   });
   // What is not known of the viscosity shifts flows where pressures drive, pressures where flows do.
   const viscosity = fluid.uncertainty ?? 0;
@@ -83,17 +100,43 @@ export function bandsOf(
   // The relative error of a trickle does not speak for the chip.
   const weighty = drives.filter(({ q }) => Math.abs(q) >= TRICKLE * entering).map(({ port }) => port);
   const flowBand = Math.max(0, ...weighty.map((port) => offered[port]!.flow));
+  const ofPieces = stretches.map((): NonNullable<PieceResult['band']> | null => null);
+  streams.forEach(({ e, q }, i) => {
+    const gradient = all[drives.length + i];
+    const own = bandOf(gradient, q, 0);
+    ofPieces[e] = {
+      flow: own + (driven ? 0 : viscosity),
+      share: bandOf(gradient, q, 1),
+      // What drives by pressure leaves the shear as it is, whatever the viscosity.
+      shear: own + lumped.ducts[e].error + (driven ? viscosity : 0),
+    };
+  });
   const peaks = Math.max(0, ...cells.map(({ peakError }) => peakError ?? 0));
   const sections = lumped.stretches.reduce((most, _, e) => Math.max(most, lumped.ducts[e].error), 0);
   return {
     ports: offered,
+    pieces: ofPieces,
+    cells: cellBands(cells, lumped, ofPieces),
     chip: {
       share: Math.max(0, ...weighty.map((port) => own[port]!.share)),
       flow: flowBand,
       shear: flowBand + Math.max(peaks, sections) + (driven ? viscosity : 0),
-      pressure: pressureBand(lumped, flow, ducts, blocks) + (driven ? viscosity : 0),
+      pressure: pressureBand(lumped, flow, ducts, blockErrors(solved, true)) + (driven ? viscosity : 0),
     },
   };
+}
+
+/** Of the peak of each cell: as far off as the flow around it that is off by most, and by its own error. */
+function cellBands(
+  cells: readonly CellResult[],
+  { names, ducts }: Lumped,
+  pieces: ErrorBands['pieces'],
+): (NonNullable<CellResult['band']> | null)[] {
+  const around = new Map(names.map((name, e) => [name, pieces[e] && pieces[e].shear - ducts[e].error]));
+  return cells.map(({ faces, peakWallShear, peakError = 0 }) => {
+    const known = faces.flatMap((name) => around.get(name) ?? []);
+    return peakWallShear === null || known.length === 0 ? null : { shear: Math.max(...known) + peakError };
+  });
 }
 
 /** x·A·x of every block, by the values of x at its nodes, into `into`. */

@@ -3,9 +3,11 @@ import { type ProcessRules, rulesOf } from '../checks/process.ts';
 import type { Chip } from '../chip/chip.ts';
 import type { Graph, Piece } from '../chip/graph.ts';
 import type { PieceResult } from '../chip/result.ts';
+import type { Duct } from '../lump/duct.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { NANOMETRES } from '../lump/stretches.ts';
+import { channelDepth, NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
+import { excesses, slenderness } from './ideal-excess.ts';
 
 /** What is solved, as far as the errors of its parts go. */
 export interface Parts {
@@ -20,22 +22,18 @@ export interface Parts {
 }
 
 /**
- * Of the width of the widest channel at an ideal junction: by how much each arm may be longer or shorter in
- * effect. Measured on the 72 chips of test/checks/band-chips.ts against solves to 0.0005: with 0.25 the flows
- * and shares off by most are off by 1.05 times less than told, those in the middle by 3 and 6 times.
- */
-const EXCESS = 0.25;
-/**
  * Of the width: by how much a square mitred bend is shorter than its centreline; 1 − 2 ln 2/π in the limit
  * of no depth, where it is most (Hall 1967, Thin Solid Films 1, 277, from memory).
  */
 const SQUARE_BEND = 1 - (2 * Math.LN2) / Math.PI;
-/** Relative error of a centreline that stands in for a cell, measured alike: the worst held 1.2 times over. */
+/** Relative error of a centreline that stands in for a cell, measured on those chips: the worst held 1.2 times over. */
 const STAND_IN = 0.2;
 /**
- * A cell's bound is that of its worst pattern of pressures, and bounds of several cells rarely add up. Of
- * their sum, this part holds 99, 97 and 95 % of flows and shares of those 72 chips at 0.002, 0.005 and 0.02
- * asked, and is 9, 7 and 7 times the true error in the middle.
+ * A cell's bound is that of its worst pattern of pressures, and in flows, which errors of both signs divide,
+ * bounds of several cells rarely add up. Of their sum, this part holds 99, 97 and 95 % of flows and shares of
+ * the 72 chips of test/checks/band-chips.ts at 0.002, 0.005 and 0.02 asked, and is 9, 7 and 7 times the true
+ * error in the middle. What drives the whole is a sum of dissipations, which all err to one side: there the
+ * whole bound counts.
  */
 const OF_BOUND = 0.4;
 
@@ -43,21 +41,19 @@ const OF_BOUND = 0.4;
 export function ductErrors({ chip, graph, lumped, pieces, flow, density }: Parts): Float64Array {
   const errors = new Float64Array(lumped.spec.resistance.length);
   const ideal = lumped.cells.length === 0;
-  const widest = ideal ? widestAt(graph) : null;
+  const around = ideal ? excesses(chip, graph) : null;
   const rules = chip.process ? rulesOf(chip.process) : null;
   lumped.stretches.forEach(({ piece: index, length, from, to, width }, e) => {
     const piece = graph.pieces[index];
     const layer = chip.layers[piece.layerIndex];
     const duct = lumped.ducts[e];
-    let excess = 0;
-    if (widest) excess = EXCESS * (widest[piece.from] + widest[piece.to]) + bendExcess(piece);
     errors[e] =
       duct.error +
-      excess / length +
+      (around ? idealShare(duct, width, channelDepth(chip, piece), length, around, index, piece) : 0) +
       entranceError(pieces[e], duct.narrow.area, density) +
       softness(
         rules,
-        layer.roof ? null : layer.depth / NANOMETRES,
+        layer.roof ? null : channelDepth(chip, piece),
         width,
         flow.pressure[from],
         flow.pressure[to],
@@ -67,15 +63,37 @@ export function ductErrors({ chip, graph, lumped, pieces, flow, density }: Parts
   return errors;
 }
 
-/** Relative error of every block of the network. */
-export function blockErrors({ lumped, inertia }: Parts): Float64Array {
+/** What ideal junctions and bends may add to a duct's resistance or take from it, as a share of it. */
+function idealShare(
+  duct: Duct,
+  width: readonly [number, number],
+  depth: number,
+  length: number,
+  around: Float64Array,
+  index: number,
+  piece: Piece,
+): number {
+  // A taper resists most at its narrow end: what is uncertain there counts by what a length of it resists there.
+  const narrow = Math.min(...width);
+  const local = width.map(
+    (w) => slenderness(w, depth) / slenderness(narrow, depth) / duct.narrow.conductance,
+  );
+  const ends = around[2 * index] * local[0] + around[2 * index + 1] * local[1];
+  return (ends / duct.resistance + bendExcess(piece)) / length;
+}
+
+/**
+ * Relative error of every block of the network: of flows, which errors of several cells share, or `whole`, of
+ * the power that drives it.
+ */
+export function blockErrors({ lumped, inertia }: Parts, whole = false): Float64Array {
   const errors = new Float64Array(lumped.spec.blocks.length);
   lumped.cells.forEach(({ spec, solution }, index) => {
     if (!solution) return;
     const { flowError, profileError } = solution;
     // What stands in for walls that lean, or for the turn into a hole, may well be off by all of its bound.
     const solved = spec.faces.some(({ kind }) => kind === 'rim') ? 0 : flowError - profileError;
-    errors[lumped.cellBlock[index]] = flowError - (1 - OF_BOUND) * solved + inertia[index];
+    errors[lumped.cellBlock[index]] = flowError - (whole ? 0 : (1 - OF_BOUND) * solved) + inertia[index];
   });
   return errors;
 }
@@ -91,16 +109,6 @@ function softness(
   if (!rules?.modulus || depth === null) return 0;
   const pressure = Math.max(Math.abs(from || 0), Math.abs(to || 0));
   return softRoofError((Math.max(...width) * pressure) / (rules.modulus.number * depth));
-}
-
-/** Width of the widest channel at each junction and chamber, m; 0 at other sites. */
-function widestAt({ sites, pieces }: Graph): Float64Array {
-  return Float64Array.from(sites, ({ kind, arms }) => {
-    if (kind !== 'junction' && kind !== 'chamber') return 0;
-    let most = 0;
-    for (const { piece, end } of arms) most = Math.max(most, pieces[piece].width[end === 'from' ? 0 : 1]);
-    return most / NANOMETRES;
-  });
 }
 
 /** What the mitred bends of a piece may take off its length, m. */

@@ -12,7 +12,7 @@ import { NANOMETRES } from '../lump/stretches.ts';
 import type { Gradient, Target } from '../network/sensitivity.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
-import { bandsOf, type ErrorBands } from './bands.ts';
+import { bandsOf } from './bands.ts';
 import { withStrain } from './cell-strain.ts';
 import { cellResults, inertiaFindings, inertiaShares } from './cells.ts';
 import { closeCalls } from './close-calls.ts';
@@ -87,9 +87,12 @@ export function report(
     status: 'solved',
     junctions,
     fluid: { viscosity: fluid.viscosity, density: fluid.density },
-    ports: bands ? withBands(ports, bands) : ports,
-    channels,
-    cells: chip.limits.length > 0 ? withStrain(cells, net, lumped, flow) : cells,
+    ports: bands ? withBands(ports, bands.ports) : ports,
+    channels: bands ? byChannel(chip, graph, lumped, withBands(pieces, bands.pieces)) : channels,
+    cells: withBands(
+      chip.limits.length > 0 ? withStrain(cells, net, lumped, flow) : cells,
+      bands?.cells ?? [],
+    ),
     routes: exposure.results,
     targets,
     limits: limits.results,
@@ -123,10 +126,11 @@ export function report(
   };
 }
 
-const withBands = (ports: readonly PortResult[], { ports: bands }: ErrorBands): PortResult[] =>
-  ports.map((port, index) => {
+/** What was found with how far it may be off, where that is known. */
+const withBands = <T extends object, B>(found: readonly T[], bands: readonly (B | null)[]): T[] =>
+  found.map((one, index) => {
     const band = bands[index];
-    return band ? { ...port, band } : port;
+    return band ? { ...one, band } : one;
   });
 
 /** Flow of every duct: 0 where it is joined so that nothing can flow, null where too small for its digits. */
