@@ -5,6 +5,7 @@ import { type SolveOptions, solve } from '../solve.ts';
 import { type Made, madeChip } from './made.ts';
 import type { Measured } from './measured.ts';
 import { type Restored, restoreDrives, settable } from './restore.ts';
+import { heldToWays, waysOf } from './ways.ts';
 
 /** The made chip beside the drawn one, and what its drives can still do. */
 export interface AsBuilt extends Made {
@@ -22,7 +23,8 @@ export interface AsBuiltOptions extends SolveOptions {
 }
 
 /**
- * The whole way: measurements into a made chip, both solved, and the drives that restore the targets. Throws `Problem`.
+ * The whole way: measurements into a made chip, both solved, and the drives that restore the targets. A target is met
+ * only by a flow that runs the way it does in the drawn chip. Throws `Problem`.
  *
  * @param memory what may be kept of the made chip between calls
  * @param known of the drawn chip, where it is solved already
@@ -36,13 +38,14 @@ export function asBuilt(
 ): AsBuilt {
   const made = madeChip(drawn, measured);
   const before = known ?? solve(drawn, options);
-  const result = solve(made.chip, options, memory);
+  const ways = waysOf(drawn, before);
+  const result = heldToWays(made.chip, solve(made.chip, options, memory), ways);
   if (made.chip.targets.length === 0) return { ...made, drawn: before, result, restored: null, wider: null };
-  const restored = restoreDrives(made.chip, options, memory);
+  const restored = restoreDrives(made.chip, { ...options, ways }, memory);
   const all = made.chip.ports.filter(({ drive }) => drive.kind !== 'closed').map(({ id }) => id);
   let wider: Restored | null = null;
   if (!restored.met && all.length > (options.set ?? settable(made.chip)).length) {
-    const tried = restoreDrives(made.chip, { ...options, set: all }, memory);
+    const tried = restoreDrives(made.chip, { ...options, ways, set: all }, memory);
     if (tried.strain !== null && (restored.strain === null || tried.strain < 0.9 * restored.strain))
       wider = tried;
   }

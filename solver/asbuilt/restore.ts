@@ -9,6 +9,7 @@ import type { Gradient, Target } from '../network/sensitivity.ts';
 import { Problem } from '../problem/problem.ts';
 import { type Networked, networkOf, type SolveOptions, solve } from '../solve.ts';
 import { boundedLeastSquares } from './least-squares.ts';
+import { heldToWays, waysOf } from './ways.ts';
 
 /** A drive as it is to be set. */
 export interface Setting {
@@ -35,6 +36,8 @@ export interface Restored {
 export interface RestoreOptions extends SolveOptions {
   /** Ids of the ports whose drives may be set; by default those that drive something or have a pump. */
   readonly set?: readonly string[];
+  /** The way that the flow of each target is to run, as `waysOf` gives it; by default as it runs in the chip as it is. */
+  readonly ways?: readonly number[];
 }
 
 /** Steps of Gauss and Newton; a linear network with targets of flow takes one, with shares three or four. */
@@ -95,10 +98,12 @@ export function restoreDrives(
   const wanted = options.set ?? settable(chip);
   for (const id of wanted) checkSettable(chip, id);
   const ports = chip.ports.flatMap((port, index) => (wanted.includes(port.id) ? [index] : []));
-  let best = stateOf(chip, options, memory);
+  const ways = options.ways ?? waysOf(chip, solve(chip, options, memory));
+  const search = { ...options, ways };
+  let best = stateOf(chip, search, memory);
   const first = best;
   for (let round = 0; round < ROUNDS && ports.length > 0; round += 1) {
-    const next = stepFrom(best, first, ports, options, memory);
+    const next = stepFrom(best, first, ports, search, memory);
     if (!next) break;
     const moved = next.change;
     best = next.state;
@@ -112,7 +117,7 @@ export function restoreDrives(
     return [{ port: chip.ports[index].id, from: before, to, held: heldBy(best, index) }];
   });
   const set = withDrives(chip, new Map(settings.map(({ port, to }) => [port, to])));
-  const result = solve(set, options, memory);
+  const result = heldToWays(set, solve(set, options, memory), ways);
   const strains = result.targets.map(({ wanted: asked, got }, i) =>
     got === null
       ? null
@@ -162,7 +167,15 @@ interface State {
   readonly entering: number;
 }
 
-function stateOf(chip: Chip, options: SolveOptions, memory: Memory): State {
+/** What a search needs: the options of a solve, and the ways that flows are to run. */
+interface Search extends SolveOptions {
+  readonly ways: readonly number[];
+}
+
+/** A flow as its target counts it: what runs the wrong way is less than nothing. */
+const counted = (q: number, way: number): number => (way === 0 ? Math.abs(q) : way * q);
+
+function stateOf(chip: Chip, options: Search, memory: Memory): State {
   const net = networkOf(chip, options, memory);
   const { flow, lumped } = net;
   const value = chip.ports.map((_, i) =>
@@ -170,7 +183,7 @@ function stateOf(chip: Chip, options: SolveOptions, memory: Memory): State {
   );
   const entering = flow.driveFlow.reduce((sum, q) => sum + Math.max(0, q || 0), 0);
   const off = chip.targets.map((target, i) => {
-    const q = Math.abs(flowOf(net, chip, i) ?? 0);
+    const q = counted(flowOf(net, chip, i, options.ways) ?? 0, options.ways[i]);
     const scale = Math.max(target.within, SHARPEST);
     return 'share' in target
       ? ((entering > 0 ? q / entering : 0) / target.share - 1) / scale
@@ -180,7 +193,12 @@ function stateOf(chip: Chip, options: SolveOptions, memory: Memory): State {
 }
 
 /** What a target is about: the drive of a port, or the piece of a channel that is furthest from what is wanted. */
-function askedOf({ lumped, flow, graph }: Networked, chip: Chip, index: number): Target | null {
+function askedOf(
+  { lumped, flow, graph }: Networked,
+  chip: Chip,
+  index: number,
+  ways: readonly number[],
+): Target | null {
   const target = chip.targets[index];
   if ('port' in target) {
     const drive = lumped.portDrive[chip.ports.findIndex(({ id }) => id === target.port)];
@@ -192,7 +210,7 @@ function askedOf({ lumped, flow, graph }: Networked, chip: Chip, index: number):
   let furthest = -1;
   lumped.stretches.forEach(({ piece }, e) => {
     if (graph.pieces[piece].channel !== target.channel) return;
-    const away = Math.abs(Math.abs(flow.ductFlow[e]) - wanted);
+    const away = Math.abs(counted(flow.ductFlow[e], ways[index]) - wanted);
     if (!(away > furthest)) return;
     furthest = away;
     found = { of: 'duct', index: e };
@@ -200,8 +218,8 @@ function askedOf({ lumped, flow, graph }: Networked, chip: Chip, index: number):
   return found;
 }
 
-function flowOf(net: Networked, chip: Chip, index: number): number | null {
-  const asked = askedOf(net, chip, index);
+function flowOf(net: Networked, chip: Chip, index: number, ways: readonly number[]): number | null {
+  const asked = askedOf(net, chip, index, ways);
   if (!asked) return null;
   const q = asked.of === 'drive' ? net.flow.driveFlow[asked.index] : net.flow.ductFlow[asked.index];
   return Number.isFinite(q) ? q : null;
@@ -211,12 +229,12 @@ function stepFrom(
   state: State,
   first: State,
   ports: readonly number[],
-  options: SolveOptions,
+  options: Search,
   memory: Memory,
 ): { readonly state: State; readonly change: number } | null {
   const { chip, net, value, off, entering } = state;
   const { lumped, flow } = net;
-  const asked = chip.targets.map((_, i) => askedOf(net, chip, i));
+  const asked = chip.targets.map((_, i) => askedOf(net, chip, i, options.ways));
   const inlets = lumped.spec.drives.flatMap((_, d) => (flow.driveFlow[d] > 0 ? [d] : []));
   const known = asked.filter((target): target is Target => target !== null);
   const found = memory.slopes(lumped, flow, [
@@ -236,15 +254,16 @@ function stepFrom(
     if (!target) return;
     const gradient = found[k];
     k += 1;
-    const q = flowOf(net, chip, i) ?? 0;
+    const q = flowOf(net, chip, i, options.ways) ?? 0;
+    const way = options.ways[i] || Math.sign(q || 1);
     const { within, ...wish } = chip.targets[i];
     const per = 1 / Math.max(within, SHARPEST);
     rows.push(
       drives.map((d, j) => {
-        const slope = Math.sign(q || 1) * gradient.byDrive[d];
+        const slope = way * gradient.byDrive[d];
         const change =
           'share' in wish
-            ? (slope - (Math.abs(q) / entering) * total[j]) / (entering * wish.share)
+            ? (slope - ((way * q) / entering) * total[j]) / (entering * wish.share)
             : slope / Math.abs(wish.flow);
         return Math.abs(change * scale[j]) < NOISE ? 0 : per * change * scale[j];
       }),

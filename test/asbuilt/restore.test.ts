@@ -1,6 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
+import { asBuilt } from '../../solver/asbuilt/as-built.ts';
 import { boundedLeastSquares } from '../../solver/asbuilt/least-squares.ts';
+import type { Measured } from '../../solver/asbuilt/measured.ts';
 import { driveEdit, restoreDrives } from '../../solver/asbuilt/restore.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { applyEdit } from '../../solver/chip/edit.ts';
@@ -201,5 +203,102 @@ describe('least squares within bounds', () => {
       ),
       { numRuns: 200, seed: 11 },
     );
+  });
+});
+
+describe('the way that a target’s flow runs', () => {
+  /** A bridge between two branches, from left to right where left is the wide one above. */
+  const bridge = (widths: Readonly<Record<string, number>>): Chip =>
+    wide(
+      cross({
+        channels: [
+          {
+            id: 'a',
+            layer: 'flow',
+            path: [
+              [8000, 20000],
+              [30000, 20000],
+            ],
+            width: 1000,
+          },
+          {
+            id: 'b',
+            layer: 'flow',
+            path: [
+              [8000, 6000],
+              [30000, 6000],
+            ],
+            width: 1000,
+          },
+          {
+            id: 'c',
+            layer: 'flow',
+            path: [
+              [30000, 20000],
+              [52000, 20000],
+            ],
+            width: 1000,
+          },
+          {
+            id: 'd',
+            layer: 'flow',
+            path: [
+              [30000, 6000],
+              [52000, 6000],
+            ],
+            width: 1000,
+          },
+          {
+            id: 'bridge',
+            layer: 'flow',
+            path: [
+              [30000, 20000],
+              [30000, 6000],
+            ],
+            width: 1000,
+          },
+        ],
+        targets: [{ channel: 'bridge', flow: '1 uL/min', within: '99 %' }],
+      }),
+      widths,
+    );
+  const measured = (id: string, value: number): Measured => ({
+    what: 'width',
+    of: 'channel',
+    id,
+    value,
+    uncertainty: 1e-9,
+    along: null,
+    at: null,
+    row: 1,
+  });
+
+  test('a flow that the made chip turns round is not met, whatever its size', () => {
+    const drawn = bridge({ a: 1500 });
+    const size = solve(drawn, IDEAL).targets[0]!.got!;
+    const chip: Chip = { ...drawn, targets: [{ channel: 'bridge', flow: size, within: 0.2 }] };
+    expect(solve(chip, IDEAL).targets[0]).toMatchObject({ met: true });
+    // Made as the mirror image of what was drawn: the same flow through the bridge, the other way.
+    const made = asBuilt(chip, [measured('a', 1e-3), measured('b', 1.5e-3)], {
+      ...IDEAL,
+      set: ['in a', 'in b'],
+    });
+    expect(made.drawn.targets[0]).toMatchObject({ met: true });
+    expect(made.result.targets[0]!.met).toBe(false);
+    expect(made.result.targets[0]!.got! / size).toBeCloseTo(-1, 6);
+    // The drives bring it back the way it was drawn, and only so is it met.
+    expect(made.restored!.met).toBe(true);
+    const { pieces } = made.restored!.result.channels.find(({ id }) => id === 'bridge')!;
+    expect(pieces[0]!.flow! / size).toBeGreaterThan(0.8);
+  });
+
+  test('without a drawn chip beside it the flow is to run as it does', () => {
+    const chip = bridge({ b: 1500 });
+    const { flow } = solve(chip, IDEAL).channels.find(({ id }) => id === 'bridge')!.pieces[0]!;
+    expect(flow).toBeLessThan(0);
+    const twice: Chip = { ...chip, targets: [{ channel: 'bridge', flow: -1.5 * flow!, within: 0.01 }] };
+    const { met, result } = restoreDrives(twice, { ...IDEAL, set: ['in a', 'in b'] });
+    expect(met).toBe(true);
+    expect(result.channels.find(({ id }) => id === 'bridge')!.pieces[0]!.flow! / flow!).toBeCloseTo(1.5, 1);
   });
 });
