@@ -1,4 +1,4 @@
-import { readFile, realpath, stat } from 'node:fs/promises';
+import { readFile, stat } from 'node:fs/promises';
 import { asBuilt } from '../../solver/asbuilt/as-built.ts';
 import type { Measured } from '../../solver/asbuilt/measured.ts';
 import { readMeasured } from '../../solver/asbuilt/read-measured.ts';
@@ -10,22 +10,10 @@ import { MOST_BYTES, readTable } from '../measurements/read-table.ts';
 import { asBuiltJson } from './as-built-json.ts';
 import { AS_BUILT_USAGE, type AsBuiltCall, asBuiltCall } from './as-built-options.ts';
 import { asBuiltText } from './as-built-report.ts';
+import { checkPlaces, checkStandard, runCommand } from './command.ts';
 import { readChipFile } from './read-chip.ts';
 import { allMet } from './report.ts';
-import { type Io, problemOf, problemText } from './say.ts';
-
-/** Throws where two files of the call are one, which would lose one of them. */
-async function checkPlaces(named: readonly string[]): Promise<void> {
-  const places = await Promise.all(named.map((path) => realpath(path).catch(() => path)));
-  const twice = places.findIndex((place, i) => places.indexOf(place) < i);
-  if (twice < 0) return;
-  throw new Problem(
-    'output',
-    'One file is named twice in the call.',
-    named[twice]!,
-    'Give each file a place of its own.',
-  );
-}
+import type { Io } from './say.ts';
 
 async function textOf(path: string): Promise<string> {
   try {
@@ -61,17 +49,8 @@ async function measuredOf(path: string, chip: Chip): Promise<Measured[]> {
 
 async function run(call: AsBuiltCall, io: Io): Promise<number> {
   const { file, measurements, json, chip: description, options } = call;
-  if (json === '-' && description === '-') {
-    throw new Problem(
-      'output',
-      'Both --json and --chip are standard output.',
-      'the command',
-      'Give one of them a file.',
-    );
-  }
-  await checkPlaces(
-    [file, measurements, json, description].filter((path) => path !== undefined && path !== '-') as string[],
-  );
+  checkStandard({ '--json': json, '--chip': description });
+  await checkPlaces([file, measurements], [json, description]);
   const chip = await readChipFile(file);
   const built = asBuilt(chip, await measuredOf(measurements, chip), options);
   const outputs: Output[] = [];
@@ -91,18 +70,7 @@ async function run(call: AsBuiltCall, io: Io): Promise<number> {
 
 /** `npm run as-built -- FILE MEASUREMENTS …`. Returns the exit code; nothing is written unless all of it can be. */
 export async function main(argv: readonly string[], io: Io): Promise<number> {
-  let call: AsBuiltCall | null = null;
-  try {
-    call = asBuiltCall(argv);
-    if (call === null) {
-      io.out(AS_BUILT_USAGE);
-      return 0;
-    }
-    return await run(call, io);
-  } catch (error) {
-    const problem = problemOf(error);
-    const measured = call !== null && problem.where.startsWith(call.measurements);
-    io.err(problemText(problem, call === null || measured ? '' : call.file));
-    return 2;
-  }
+  const about = ({ file, measurements }: AsBuiltCall, { where }: Problem): string =>
+    where.startsWith(measurements) ? '' : file;
+  return await runCommand({ usage: AS_BUILT_USAGE, options: asBuiltCall, run, about }, argv, io);
 }

@@ -1,4 +1,3 @@
-import { realpath } from 'node:fs/promises';
 import { basename } from 'node:path';
 import { writeDescription } from '../../solver/chip/description-write.ts';
 import { formatQuantity } from '../../solver/chip/units-format.ts';
@@ -8,34 +7,13 @@ import { type Output, writeFiles } from '../export/write-files.ts';
 import { readBytes } from '../files/read.ts';
 import { problemFrom, startImport } from '../import/thread.ts';
 import { BRING_IN_USAGE, type BringInCliOptions, bringInCliOptions } from './bring-in-options.ts';
-import { type Io, problemOf, problemText } from './say.ts';
+import { checkPlaces, checkStandard, runCommand } from './command.ts';
+import type { Io } from './say.ts';
 import { type Column, tableLines } from './table.ts';
 
-/** Throws where two files of the call are one, which would lose one of them. */
-async function checkPlaces(places: readonly string[]): Promise<void> {
-  const real = await Promise.all(places.map(async (path) => await realpath(path).catch(() => path)));
-  const twice = real.findIndex((path, i) => real.indexOf(path) < i);
-  if (twice < 0) return;
-  const read = real[twice] === real[0];
-  throw new Problem(
-    'output',
-    `One file is named twice in the call${read ? ', and what is read would be overwritten' : ''}.`,
-    places[twice],
-    'Give each output a file of its own.',
-  );
-}
-
 async function run({ file, out, json, settings }: BringInCliOptions, io: Io): Promise<number> {
-  const toStandard = [out, json].filter((path) => path === '-');
-  if (toStandard.length > 1) {
-    throw new Problem(
-      'output',
-      'Both -o and --json are standard output.',
-      'the command',
-      'Give one of them a file.',
-    );
-  }
-  await checkPlaces([file, out, json].filter((path) => path !== undefined && path !== '-') as string[]);
+  checkStandard({ '-o': out, '--json': json });
+  await checkPlaces([file], [out, json]);
   const bytes = await readBytes(file);
   const ended = await startImport({ bytes, file: basename(file), settings }, () => undefined).ended;
   if (ended.kind === 'failed') throw problemFrom(ended.problem);
@@ -117,17 +95,5 @@ function reportText(report: BringInReport): string {
 
 /** `npm run bring-in -- FILE …`: makes a chip of a drawing. Returns the exit code; all files are written, or none. */
 export async function main(argv: readonly string[], io: Io): Promise<number> {
-  let file = '';
-  try {
-    const options = bringInCliOptions(argv);
-    if (options === null) {
-      io.out(BRING_IN_USAGE);
-      return 0;
-    }
-    file = options.file;
-    return await run(options, io);
-  } catch (error) {
-    io.err(problemText(problemOf(error), file));
-    return 2;
-  }
+  return await runCommand({ usage: BRING_IN_USAGE, options: bringInCliOptions, run }, argv, io);
 }

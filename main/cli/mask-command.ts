@@ -1,33 +1,18 @@
-import { readFile, realpath } from 'node:fs/promises';
+import { readFile } from 'node:fs/promises';
 import { join } from 'node:path';
-import { Problem } from '../../solver/problem/problem.ts';
 import type { MaskReport } from '../contract/mask.ts';
 import { makeMasks } from '../export/mask/make.ts';
 import { placesFor } from '../export/mask/places.ts';
 import { type Output, writeFiles } from '../export/write-files.ts';
+import { checkPlaces, runCommand } from './command.ts';
 import { MASK_USAGE, type MaskCliOptions, maskCliOptions } from './mask-options.ts';
 import { readChipFile } from './read-chip.ts';
-import { type Io, problemOf, problemText } from './say.ts';
+import type { Io } from './say.ts';
 import { tableLines } from './table.ts';
 
 async function programVersion(): Promise<string> {
   const text = await readFile(join(import.meta.dirname, '../../package.json'), 'utf8');
   return (JSON.parse(text) as { version: string }).version;
-}
-
-/** Throws where two files of the call are one, which would lose one of them. */
-async function checkPlaces(file: string, outputs: readonly string[]): Promise<void> {
-  const real = async (path: string): Promise<string> => await realpath(path).catch(() => path);
-  const places = await Promise.all([file, ...outputs].map(real));
-  const twice = places.findIndex((place, i) => places.indexOf(place) < i);
-  if (twice < 0) return;
-  const read = places[twice] === places[0];
-  throw new Problem(
-    'output',
-    `One file is named twice in the call${read ? ', and what is read would be overwritten' : ''}.`,
-    outputs[twice - 1]!,
-    'Give each output a place of its own.',
-  );
 }
 
 async function run({ file, out, json, formats, options }: MaskCliOptions, io: Io): Promise<number> {
@@ -50,7 +35,7 @@ async function run({ file, out, json, formats, options }: MaskCliOptions, io: Io
   const text = `${JSON.stringify(report, null, 2)}\n`;
   if (json !== undefined && json !== '-') outputs.push({ path: json, content: text });
   await checkPlaces(
-    file,
+    [file],
     outputs.map(({ path }) => path),
   );
   await writeFiles(outputs);
@@ -91,17 +76,5 @@ function maskText(report: MaskReport): string {
 
 /** `npm run mask -- FILE …`: makes masks of a chip. Returns the exit code; all files are written, or none. */
 export async function main(argv: readonly string[], io: Io): Promise<number> {
-  let file = '';
-  try {
-    const options = maskCliOptions(argv);
-    if (options === null) {
-      io.out(MASK_USAGE);
-      return 0;
-    }
-    file = options.file;
-    return await run(options, io);
-  } catch (error) {
-    io.err(problemText(problemOf(error), file));
-    return 2;
-  }
+  return await runCommand({ usage: MASK_USAGE, options: maskCliOptions, run }, argv, io);
 }

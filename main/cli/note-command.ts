@@ -1,28 +1,13 @@
 import { readFile } from 'node:fs/promises';
 import type { Result } from '../../solver/chip/result.ts';
-import { Problem } from '../../solver/problem/problem.ts';
 import { type Documents, noteFiles, splitFile } from '../export/note/documents.ts';
 import { type Output, writeFiles } from '../export/write-files.ts';
 import { solveChip } from '../solving/solve-chip.ts';
+import { checkPlaces, runCommand } from './command.ts';
 import { NOTE_USAGE, type NoteCall, noteCall, splitFormat } from './note-options.ts';
 import { readChipFile } from './read-chip.ts';
 import { allMet } from './report.ts';
-import { type Io, problemOf, problemText } from './say.ts';
-import { placeOf } from './solve-command.ts';
-
-/** Throws where two files of the call are one, which would lose one of them. */
-async function checkPlaces(file: string, outputs: readonly Output[]): Promise<void> {
-  const named = [file, ...outputs.map(({ path }) => path)];
-  const places = await Promise.all(named.map(placeOf));
-  const twice = places.findIndex((place, i) => places.indexOf(place) < i);
-  if (twice < 0) return;
-  throw new Problem(
-    'output',
-    `One file is named twice in the call${places[twice] === places[0] ? ', and what is read would be overwritten' : ''}.`,
-    named[twice]!,
-    'Give each output a file of its own.',
-  );
-}
+import type { Io } from './say.ts';
 
 async function made(all: Documents, { outputs }: NoteCall): Promise<Output[]> {
   const { pdf, html, csv, split, json } = outputs;
@@ -67,7 +52,10 @@ async function run(call: NoteCall, io: Io): Promise<number> {
   const all: Documents = { chip, result, paper: call.paper, program: await programName(), date: new Date() };
   const outputs = await made(all, call);
   const files = outputs.filter(({ path }) => path !== '-');
-  await checkPlaces(call.file, files);
+  await checkPlaces(
+    [call.file],
+    files.map(({ path }) => path),
+  );
   await writeFiles(files);
   const spoken = outputs.find(({ path }) => path === '-');
   if (spoken) io.out(String(spoken.content));
@@ -80,17 +68,5 @@ async function run(call: NoteCall, io: Io): Promise<number> {
  * written unless all of it can be.
  */
 export async function noteMain(argv: readonly string[], io: Io): Promise<number> {
-  let file = '';
-  try {
-    const call = noteCall(argv);
-    if (call === null) {
-      io.out(NOTE_USAGE);
-      return 0;
-    }
-    file = call.file;
-    return await run(call, io);
-  } catch (error) {
-    io.err(problemText(problemOf(error), file));
-    return 2;
-  }
+  return await runCommand({ usage: NOTE_USAGE, options: noteCall, run }, argv, io);
 }

@@ -52,17 +52,24 @@ export function moved(vertices: Vertices, by: Affine, closed: boolean): Vertices
   return out;
 }
 
-export function movedTrack({ vertices, closed, widths }: Track, by: Affine): Track {
-  if (by === SAME) return { vertices, closed, widths };
+export function movedTrack(track: Track, by: Affine): Track {
+  if (by === SAME) return track;
+  const { vertices, closed, widths, round } = track;
+  const ends = round ? { round } : {};
   const grown = growth(by);
   const straight = !isSimilar(by) && vertices.some((value, k) => k % 3 === 2 && value !== 0);
   const out = moved(vertices, by, closed);
   // Cut arcs no longer match their widths edge by edge: the widest stands for all of them then.
   if (straight && widths.length > 0) {
     const widest = widths.reduce((most, width) => Math.max(most, width), 0);
-    return { vertices: out, closed, widths: new Float64Array(2 * (out.length / 3)).fill(widest * grown) };
+    return {
+      vertices: out,
+      closed,
+      widths: new Float64Array(2 * (out.length / 3)).fill(widest * grown),
+      ...ends,
+    };
   }
-  return { vertices: out, closed, widths: widths.map((width) => width * grown) };
+  return { vertices: out, closed, widths: widths.map((width) => width * grown), ...ends };
 }
 
 function straightened(vertices: Vertices, closed: boolean): Vertices {

@@ -25,6 +25,7 @@ import { readDrawing } from './read-drawing.ts';
 import { type Found, recognise, trackCourses } from './recognise/layer.ts';
 import { type Frame, layerAreas, pathsOf, unitedAreas } from './recognise/plane.ts';
 import { roomsIn, withoutHoles } from './recognise/rooms.ts';
+import { type Drawn, discPath, freeEnds, type RoundEnd, roundEnds } from './recognise/round-ends.ts';
 import { suggestedRole } from './settings.ts';
 import { LIMITS, type Work } from './work.ts';
 
@@ -65,7 +66,7 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
   const roles = rolesOf(drawing, settings);
   const { frame, width, height, says } = placed(drawing, roles, unit * NM_PER_M);
   const notes = new Notes(drawing.notUnderstood);
-  const assumed = [says];
+  const assumed = [...drawing.assumed, says];
   const chipLayers = chipLayersOf(drawing, roles);
   const empty: Chip = {
     name: file.replace(/\.[^.]*$/, '').slice(0, 200) || 'drawing',
@@ -259,13 +260,21 @@ interface Making {
 function makeLayer(empty: Chip, { layer, drawn }: ChipLayer, making: Making): Made {
   const { frame, settings, notes, assumed, work, told } = making;
   const found: Found[] = [];
+  const paths: Drawn[] = [];
+  const ends: RoundEnd[] = [];
+  let count = 0;
   for (const { name, tracks, lines } of drawn) {
     const widened = settings.lineWidth === null ? [] : lines;
     if (settings.lineWidth === null && lines.length > 0) {
       notes.add('open lines without a width (give one to make them channels)', `layer ${name}`, lines.length);
     }
     for (const track of tracks) {
-      for (const course of trackCourses(track, frame)) found.push({ course, into: [0, 0], area: -1 });
+      for (const course of trackCourses(track, frame)) {
+        found.push({ course, into: [0, 0], area: -1 });
+        paths.push({ course, track: count });
+      }
+      if (track.round && !track.closed) ends.push(...roundEnds(track, frame, count));
+      count += 1;
     }
     for (const line of widened) {
       const width = settings.lineWidth! / frame.scale;
@@ -275,7 +284,7 @@ function makeLayer(empty: Chip, { layer, drawn }: ChipLayer, making: Making): Ma
     }
   }
   const fromPaths = found.length;
-  const bodies = chipPaths(empty, layer.id, found);
+  const strips = chipPaths(empty, layer.id, found);
   work.stage('uniting');
   const layers = drawn.map((one) => layerAreas(one, frame, work));
   const posts = layers.reduce((sum, one) => sum + one.posts, 0);
@@ -289,15 +298,19 @@ function makeLayer(empty: Chip, { layer, drawn }: ChipLayer, making: Making): Ma
   const regions = pathsOf(areas);
   work.stage('recognising');
   const ofRegions = recognise(areas, work, (share) => told(0.7 * share));
+  const discs = freeEnds(ends, paths, regions).map((end) => discPath(end, CHORD_ERROR));
+  const bodies = discs.length > 0 ? Clipper.union([...strips, ...discs], FillRule.NonZero) : strips;
   const ground = bodies.length > 0 ? Clipper.union(regions, bodies, FillRule.NonZero) : regions;
-  if (regions.length === 0)
-    return { found, fromPaths, chambers: [], ground, layer: layer.id, covered: bodies, fit: null };
+  if (regions.length === 0) {
+    const whole = discs.length > 0 ? null : bodies;
+    return { found, fromPaths, chambers: discs, ground, layer: layer.id, covered: whole, fit: null };
+  }
   const covered = chipPaths(empty, layer.id, ofRegions);
   const { deviation: fit, off } = compare(regions, covered, EDGES, (share) => told(0.7 + 0.2 * share));
   const rooms = roomsIn({ areas, regions, covered, off, found: ofRegions, tracks: found }, (some) =>
     chipPaths(empty, layer.id, some),
   );
-  const chambers: Paths64 = [];
+  const chambers: Paths64 = [...discs];
   rooms.left.forEach((area, i) => {
     told(0.9 + (0.1 * i) / rooms.left.length);
     const outlines = withoutHoles(area);

@@ -16,6 +16,8 @@ export interface Drawing {
   /** The page, from (0, 0), where the format has one. */
   readonly page: { readonly width: number; readonly height: number } | null;
   readonly notUnderstood: readonly Note[];
+  /** What was taken for granted where the file does not say, in sentences. */
+  readonly assumed: readonly string[];
   /** Entities read, those of references counted as often as they are placed. */
   readonly entities: number;
 }
@@ -44,6 +46,8 @@ export interface Track {
   readonly closed: boolean;
   /** Full width at the start and at the end of each edge, in twos; empty where it has none. */
   readonly widths: Float64Array;
+  /** Whether half a disc stands at either end, beyond its last point. */
+  readonly round?: boolean;
 }
 
 /** Gathers a drawing, within bounds. */
@@ -51,6 +55,7 @@ export class Gathering {
   readonly work: Work;
   readonly layers = new Map<string, DrawnLayer>();
   readonly #notes = new Map<string, { count: number; where: string }>();
+  readonly #assumed = new Set<string>();
 
   constructor(work: Work) {
     this.work = work;
@@ -79,6 +84,11 @@ export class Gathering {
     if (known) known.count += count;
     else if (this.#notes.size < LIMITS.notes) this.#notes.set(what, { count, where });
     else this.note('further sorts of things', where, count);
+  }
+
+  /** A sentence on what was taken for granted. */
+  assume(says: string): void {
+    this.#assumed.add(says);
   }
 
   region(layer: string, loops: readonly Vertices[], how: Omit<Region, 'loops'>, where: string): void {
@@ -119,6 +129,7 @@ export class Gathering {
       ...rest,
       layers: [...this.layers.values()],
       notUnderstood: [...this.#notes].map(([what, { count, where }]) => ({ what, count, where })),
+      assumed: [...this.#assumed],
       entities: this.work.entities,
     };
   }
@@ -139,6 +150,21 @@ function encloses(loop: Vertices): boolean {
 export function evenWidths(vertices: Vertices, closed: boolean, width: number): Float64Array {
   if (!(width > 0)) return new Float64Array(0);
   return new Float64Array(2 * (vertices.length / 3 - (closed ? 0 : 1))).fill(width);
+}
+
+/** Moves the ends of an open path outwards along its first and last stretch, in place. */
+export function extend(vertices: Vertices, first: number, last: number): void {
+  const end = vertices.length - 3;
+  if (end < 3) return;
+  const push = (tip: number, next: number, by: number): void => {
+    const [dx, dy] = [vertices[tip] - vertices[next], vertices[tip + 1] - vertices[next + 1]];
+    const length = Math.hypot(dx, dy);
+    if (length === 0) return;
+    vertices[tip] += (dx / length) * by;
+    vertices[tip + 1] += (dy / length) * by;
+  };
+  push(0, 3, first);
+  push(end, end - 3, last);
 }
 
 /** A circle as two half turns. */

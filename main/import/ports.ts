@@ -81,7 +81,7 @@ function port(count: number, at: Point, layer: string, diameter: number): Port {
 }
 
 /** Where there is fluid. */
-class Ground {
+export class Ground {
   readonly #paths: Paths64;
   readonly #index: Flatbush | null;
 
@@ -97,15 +97,15 @@ class Ground {
 
   /** Whether there is fluid under a hole: under its centre, or, where a channel just ends there, around it. */
   reached([x, y]: Point, radius: number): boolean {
-    if (this.#holds(x, y)) return true;
+    if (this.holds(x, y)) return true;
     for (let k = 0; k < 12; k += 1) {
       const angle = (k * Math.PI) / 6;
-      if (this.#holds(x + 0.5 * radius * Math.cos(angle), y + 0.5 * radius * Math.sin(angle))) return true;
+      if (this.holds(x + 0.5 * radius * Math.cos(angle), y + 0.5 * radius * Math.sin(angle))) return true;
     }
     return false;
   }
 
-  #holds(x: number, y: number): boolean {
+  holds(x: number, y: number): boolean {
     let odd = false;
     for (const i of this.#index?.search(x, y, x, y) ?? []) if (crossedOddly(this.#paths[i], x, y)) odd = !odd;
     return odd;

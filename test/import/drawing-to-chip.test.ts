@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { chipOf, dxf, outline } from './read.ts';
+import { boundary, chipOf, dxf, gds, outline, record } from './read.ts';
 
 /** What paths, lines, holes, units and layers of a drawing become; one drawing unit is a micrometre. */
 
@@ -166,4 +166,67 @@ test('two layers of the drawing on one of the chip are one cavity; two depths fo
   expect(() => chipOf(file, { roles: { C: { kind: 'holes' } } })).toThrow(
     expect.objectContaining({ what: 'The drawing has no layer "C".' }),
   );
+});
+
+/** A GDSII path of a width with the ends of its type, nm. */
+const gdsPath = (width: number, xy: readonly number[], type = 1): number[] => [
+  ...record(0x09, 0),
+  ...record(0x0d, 2, [1]),
+  ...record(0x0e, 2, [0]),
+  ...record(0x21, 2, [type]),
+  ...record(0x0f, 3, [width]),
+  ...record(0x10, 3, xy),
+  ...record(0x11, 0),
+];
+
+test('round ends of paths: half a disc beyond a free end, as the hole of its port or as a chamber', () => {
+  const one = gds({ TOP: [gdsPath(100_000, [1e6, 1e6, 3e6, 1e6])] });
+  const { chip, report } = chipOf(one);
+  expect(report.notUnderstood).toEqual([]);
+  expect(chip.channels.map(({ path }) => path)).toEqual([
+    [
+      [1e6, 1e6],
+      [3e6, 1e6],
+    ],
+  ]);
+  expect(chip.ports.map(({ at, diameter }) => [at, diameter])).toEqual([
+    [[1e6, 1e6], 100_000],
+    [[3e6, 1e6], 100_000],
+  ]);
+  // 2 mm by 0.1 mm and a disc of 0.1 mm; its chords lie within 20 nm of it.
+  const [{ deviation }] = report.chipLayers;
+  const area = 2 * 0.1 + (Math.PI * 0.1 ** 2) / 4;
+  expect(Math.abs(deviation!.area * 1e6 - area)).toBeLessThan(20e-6 * Math.PI * 0.1);
+  expect(deviation!.furthest).toBeLessThan(0.05e-6);
+  const bare = chipOf(one, { portsAtEnds: false });
+  expect(bare.chip.chambers).toHaveLength(2);
+  expect(bare.report.chipLayers[0]!.deviation!.furthest).toBeLessThan(0.05e-6);
+});
+
+test('round ends inside another channel, in a region or on the end of another path are no holes', () => {
+  const { chip } = chipOf(
+    gds({
+      TOP: [
+        gdsPath(200_000, [1e6, 1e6, 5e6, 1e6], 0),
+        gdsPath(100_000, [2e6, 1e6, 2e6, 3e6]),
+        gdsPath(100_000, [2e6, 3e6, 4e6, 3e6]),
+        gdsPath(100_000, [4e6, 3e6, 6e6, 5e6]),
+        boundary([5.5e6, 4.5e6, 7.5e6, 4.5e6, 7.5e6, 6.5e6, 5.5e6, 6.5e6]),
+      ],
+    }),
+  );
+  expect(chip.ports.map(({ diameter }) => diameter)).toEqual([0, 0]);
+  expect(chip.chambers).toHaveLength(1);
+});
+
+test('round and square ends of strokes', () => {
+  const stroke = (cap: string): string =>
+    `<svg width="10mm" height="10mm" viewBox="0 0 10000 10000"><g id="flow"><path d="M1000 5000h4000" fill="none" stroke="#000" stroke-width="100" stroke-linecap="${cap}"/></g></svg>`;
+  const [round, square, butt] = ['round', 'square', 'butt'].map((cap) => chipOf(stroke(cap)));
+  const reach = ({ chip }: typeof round): number[] => chip.channels[0]!.path.map(([x]) => x);
+  expect(reach(butt!)).toEqual([1e6, 5e6]);
+  expect(reach(square!)).toEqual([0.95e6, 5.05e6]);
+  expect(reach(round!)).toEqual([1e6, 5e6]);
+  expect(round!.chip.ports.map(({ diameter }) => diameter)).toEqual([100_000, 100_000]);
+  for (const { report } of [round!, square!, butt!]) expect(report.notUnderstood).toEqual([]);
 });

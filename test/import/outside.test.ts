@@ -38,7 +38,7 @@ for version in ('R12', 'R2000', 'R2010', 'R2018'):
 print(json.dumps(told))
 `;
 
-function written(): { folder: string; told: Record<string, number> } | null {
+function written(script = SCRIPT): { folder: string; told: Record<string, number> } | null {
   try {
     execFileSync(PYTHON, ['-c', 'import ezdxf'], { stdio: 'pipe' });
   } catch (error) {
@@ -47,7 +47,7 @@ function written(): { folder: string; told: Record<string, number> } | null {
     return null;
   }
   const folder = mkdtempSync(join(tmpdir(), 'channelwright-ezdxf-'));
-  const told = JSON.parse(execFileSync(PYTHON, ['-c', SCRIPT, folder], { encoding: 'utf8' })) as Record<
+  const told = JSON.parse(execFileSync(PYTHON, ['-c', script, folder], { encoding: 'utf8' })) as Record<
     string,
     number
   >;
@@ -91,3 +91,60 @@ test('every version that ezdxf writes is read with the areas that ezdxf, or a ha
     rmSync(files.folder, { recursive: true });
   }
 });
+
+/** Splines given by fit points, as ezdxf 1 and 0.18 flatten them themselves; ends with and without tangents. */
+const FIT = `
+import sys, json, ezdxf
+from ezdxf.math import Vec3
+folder, = sys.argv[1:]
+cases = [
+    ([(0, 0), (10, 4), (22, -3), (30, 5), (45, 0)], ((1, 1), (1, -2))),
+    ([(0, 0), (3, 8), (14, 9), (15, -4), (40, -6), (44, 3)], ((0, 3), (0.2, 0.1))),
+    ([(0, 0), (20, 15)], ((1, 0), (1, 0))),
+    ([(0, 0), (10, 4), (22, 6), (34, 4), (45, 0), (60, -4)], None),
+]
+told = []
+for i, (points, tangents) in enumerate(cases):
+    doc = ezdxf.new('R2000')
+    doc.units = ezdxf.units.MM
+    s = doc.modelspace().add_spline([(x, y, 0) for x, y in points], dxfattribs={'layer': 'FLOW'})
+    if tangents:
+        s.dxf.start_tangent, s.dxf.end_tangent = [Vec3(t) for t in tangents]
+    doc.saveas(f'{folder}/fit{i}.dxf')
+    told.append([[p.x, p.y] for p in s.flattening(1e-5, segments=64)])
+print(json.dumps(told))
+`;
+
+test('splines given by fit points run as ezdxf runs them; without end tangents as near as its guess of them', () => {
+  const files = written(FIT);
+  if (!files) return;
+  try {
+    const curves = files.told as unknown as [number, number][][];
+    curves.forEach((curve, i) => {
+      const drawing = drawingOf(new Uint8Array(readFileSync(join(files.folder, `fit${i}.dxf`))));
+      expect(drawing.notUnderstood).toEqual([]);
+      expect(drawing.assumed.join()).toMatch(/the points they go through/);
+      const { vertices } = drawing.layers[0]!.lines[0]!;
+      let [furthest, size] = [0, 0];
+      for (let k = 0; k < vertices.length; k += 3) {
+        furthest = Math.max(furthest, offCurve(curve, vertices[k]!, vertices[k + 1]!));
+        size = Math.max(size, Math.hypot(vertices[k]!, vertices[k + 1]!));
+      }
+      // Of the points themselves; where the file gives no tangents, ezdxf estimates them from five points.
+      expect(furthest / size, `spline ${i}`).toBeLessThan(i < 3 ? 1e-6 : 5e-3);
+    });
+  } finally {
+    rmSync(files.folder, { recursive: true });
+  }
+});
+
+function offCurve(curve: readonly [number, number][], x: number, y: number): number {
+  let best = Infinity;
+  for (let i = 0; i + 1 < curve.length; i += 1) {
+    const [[ax, ay], [bx, by]] = [curve[i]!, curve[i + 1]!];
+    const [dx, dy] = [bx - ax, by - ay];
+    const t = Math.min(1, Math.max(0, ((x - ax) * dx + (y - ay) * dy) / (dx * dx + dy * dy)));
+    best = Math.min(best, Math.hypot(x - ax - t * dx, y - ay - t * dy));
+  }
+  return best;
+}

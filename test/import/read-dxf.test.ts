@@ -259,3 +259,24 @@ function area(loop: Float64Array): number {
   }
   return sum;
 }
+
+test('a closed spline of fit points: four points of a circle give the periodic cubic through them', () => {
+  const points = [
+    [1000, 0],
+    [0, 1000],
+    [-1000, 0],
+    [0, -1000],
+  ].flatMap(([x, y]) => [11, x!, 21, y!]);
+  const drawing = drawingOf(dxf([0, 'SPLINE', 8, 'A', 70, 1, 71, 3, 74, 4, ...points]));
+  const [loop] = layerOf(drawing, 'A').regions[0]!.loops;
+  // By hand: equal spans of parameter 1, m(i-1) + 4 m(i) + m(i+1) = 3 (p(i+1) - p(i-1)) gives m = 1.5 (turned
+  // a quarter), so that half way on a span x = y = (1 + 1.5 / 4) / 2 of the radius.
+  const half = 1000 * (1 / 2 + 1.5 / 8);
+  const nearest = Math.min(
+    ...Array.from({ length: loop!.length / 3 }, (_, k) =>
+      Math.hypot(loop![3 * k]! - half, loop![3 * k + 1]! - half),
+    ),
+  );
+  expect(nearest).toBeLessThan(1e-6);
+  expect(loop!.length / 3).toBeGreaterThan(16);
+});

@@ -73,6 +73,11 @@ test('paths: flush, square and given ends, width absolute where negative', () =>
   expect(ends(0)).toEqual([0, 100, 20]);
   expect(ends(2)).toEqual([-10, 110, 20]);
   expect(ends(4)).toEqual([-7, 109, 20]);
+  expect(ends(1)).toEqual([0, 100, 20]);
+  const [round, square] = [1, 0].map(
+    (type) => layerOf(drawingOf(gds({ TOP: [path(record(0x21, 2, [type]), 20)] })), '2/5').tracks[0]!.round,
+  );
+  expect([round, square]).toEqual([true, undefined]);
   const twice = drawingOf(gds({ TOP: [sref('C', MAG, [0, 0])], C: [path([], -20), path([], 20)] }));
   expect(layerOf(twice, '2/5').tracks.map(({ widths }) => widths[0])).toEqual([20, 40]);
 });

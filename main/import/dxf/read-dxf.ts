@@ -214,8 +214,10 @@ class Placer {
   #draw(shape: Drawn | null, by: Affine, layer: string, where: string, type = ''): void {
     if (shape === null) this.#to.note(type || 'an entity without a type', where);
     else if ('not' in shape) this.#to.note(shape.not, where);
-    else if ('track' in shape) this.#to.track(layer, movedTrack(shape.track, by), where);
-    else {
+    else if ('track' in shape) {
+      if (shape.assumed) this.#to.assume(shape.assumed);
+      this.#to.track(layer, movedTrack(shape.track, by), where);
+    } else {
       const loops = shape.loops.map((loop) => moved(loop, by, true));
       this.#to.region(layer, loops, shape.how, where);
     }

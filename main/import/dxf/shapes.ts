@@ -1,10 +1,12 @@
 import { ellipsePoints, nurbsPoints } from '../curves.ts';
 import { circle, type Region, type Track, type Vertices } from '../drawing.ts';
+import { fitSplinePoints } from './fit-spline.ts';
 import { type Entity, needed, numberOf, numbersOf } from './pairs.ts';
 
 /** What one entity draws in its own coordinates, or in words why it is not understood. */
 export type Drawn =
-  | { readonly track: Track }
+  /** `assumed`: what its curve was taken to be, where the file does not say. */
+  | { readonly track: Track; readonly assumed?: string }
   | { readonly loops: readonly Vertices[]; readonly how: Omit<Region, 'loops'> }
   | { readonly not: string };
 
@@ -86,7 +88,7 @@ function ellipse(entity: Entity): Drawn {
 function spline(entity: Entity): Drawn {
   const x = numbersOf(entity, 10);
   const y = numbersOf(entity, 20);
-  if (x.length === 0) return { not: 'splines given by fit points only' };
+  if (x.length === 0) return fitted(entity);
   const weights = numbersOf(entity, 41);
   let [low, high] = [Infinity, 0];
   for (let i = 0; i < x.length; i += 1) {
@@ -110,6 +112,31 @@ function spline(entity: Entity): Drawn {
   const last = points.length - 3;
   const closed = Math.hypot(points[last] - points[0], points[last + 1] - points[1]) <= 1e-9 * high;
   return line(closed ? points.slice(0, -3) : points, closed);
+}
+
+/** A spline of which the file holds only the points that it goes through. */
+function fitted(entity: Entity): Drawn {
+  const [x, y] = [numbersOf(entity, 11), numbersOf(entity, 21)];
+  const way = (code: number): [number, number] | null =>
+    entity.find(code) < 0 ? null : [needed(entity, code), needed(entity, code + 10)];
+  const closed = (numberOf(entity, 70, 0) & 1) === 1;
+  const size = x.reduce((most, value, i) => Math.max(most, Math.hypot(value - x[0], y[i] - y[0])), 0);
+  const points =
+    x.length === y.length && size > 0
+      ? fitSplinePoints({ x, y, start: way(12), end: way(13), closed }, size * CURVE_TOLERANCE)
+      : null;
+  if (!points) return { not: 'splines whose points do not make a curve' };
+  const last = points.length - 3;
+  const meets = !closed && points[0] === points[last] && points[1] === points[last + 1];
+  return {
+    track: {
+      vertices: Float64Array.from(meets ? points.slice(0, -3) : points),
+      closed: closed || meets,
+      widths: NONE,
+    },
+    assumed:
+      'Splines given only by the points they go through were taken as cubic, with continuous curvature and the length of the chords as parameter; ends without a tangent have no curvature.',
+  };
 }
 
 function lightPolyline(entity: Entity): Drawn {

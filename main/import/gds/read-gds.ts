@@ -1,6 +1,6 @@
 import { Problem } from '../../../solver/problem/problem.ts';
 import { type Affine, compose, growth, moved, SAME, scaling, shift, turning } from '../affine.ts';
-import { type Drawing, evenWidths, FILLED, Gathering } from '../drawing.ts';
+import { type Drawing, evenWidths, extend, FILLED, Gathering } from '../drawing.ts';
 import { LIMITS, type Work } from '../work.ts';
 import { ascii, int16, int32, RECORD, real8, records, type StreamRecord } from './records.ts';
 
@@ -225,11 +225,15 @@ class Placer {
     const vertices = withBulges(xy);
     if (pathtype === 2) extend(vertices, full / 2, full / 2);
     else if (pathtype === 4) extend(vertices, extensions[0], extensions[1]);
-    else if (pathtype === 1) this.#to.note('round ends of paths (cut square at the last point)', where);
     const own = moved(vertices, by, false);
     this.#to.track(
       layer,
-      { vertices: own, closed: false, widths: evenWidths(own, false, full * growth(by)) },
+      {
+        vertices: own,
+        closed: false,
+        widths: evenWidths(own, false, full * growth(by)),
+        ...(pathtype === 1 && { round: true }),
+      },
       where,
     );
   }
@@ -299,18 +303,4 @@ function withoutRepeat(xy: Float64Array): Float64Array {
   const all = withBulges(xy);
   const last = all.length - 3;
   return last > 0 && all[0] === all[last] && all[1] === all[last + 1] ? all.subarray(0, last) : all;
-}
-
-/** Moves the ends of a path outwards along its first and last stretch. */
-function extend(vertices: Float64Array, first: number, last: number): void {
-  const end = vertices.length - 3;
-  if (end < 3) return;
-  const push = (tip: number, next: number, by: number): void => {
-    const [dx, dy] = [vertices[tip] - vertices[next], vertices[tip + 1] - vertices[next + 1]];
-    const length = Math.hypot(dx, dy);
-    vertices[tip] += (dx / length) * by;
-    vertices[tip + 1] += (dy / length) * by;
-  };
-  push(0, 3, first);
-  push(end, end - 3, last);
 }

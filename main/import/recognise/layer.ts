@@ -102,22 +102,39 @@ const SHORT_ROOM = 3;
 const SHORT_ALONE = 4;
 const NARROWER = 0.6;
 
-/** Strips without those that are rooms rather than channels; their ground goes to the knots beside them. */
+/** A stretch shorter than this many widths says nothing of what those beside it are. */
+const STUB = 1;
+/** A taper shorter than this many widths that goes on along neither of its neighbours is the corner between them. */
+const SHORT_CORNER = 1.5;
+/** Most sine between a taper and the channel that it goes on to. */
+const GOES_ON = 0.05;
+
+/** Strips without those that are rooms or corners rather than channels; their ground goes to the knots beside them. */
 function alone(all: ReturnType<typeof stripsOf>): ReturnType<typeof stripsOf> {
   const { strips, knots } = all;
   const rooms = new Set<number>();
+  const widthOf = (s: number): number => Math.max(...strips[s].ends.map(({ width }) => width));
+  const stub = (s: number): boolean => strips[s].length < STUB * widthOf(s);
   strips.forEach(({ ends, length, axis }, s) => {
     if (axis?.kind !== 'line') return;
-    const width = Math.max(ends[0].width, ends[1].width);
-    const others = ends.flatMap(({ knot }) =>
-      knot < 0
-        ? []
-        : knots[knot].ends
-            .filter(({ strip }) => strip !== s)
-            .map(({ strip, end }) => strips[strip].ends[end].width),
+    const width = widthOf(s);
+    const others = ends.map((mine) =>
+      mine.knot < 0 ? [] : knots[mine.knot].ends.filter(({ strip }) => strip !== s),
     );
-    const narrow = others.every((other) => other <= NARROWER * width);
-    if (narrow && length < (others.length > 0 ? SHORT_ROOM : SHORT_ALONE) * width) rooms.add(s);
+    const sides = others.flat();
+    const sure =
+      stub(s) && sides.some(({ strip }) => !stub(strip)) ? sides.filter(({ strip }) => !stub(strip)) : sides;
+    const narrow = sure.every(({ strip, end }) => strips[strip].ends[end].width <= NARROWER * width);
+    if (narrow && length < (sides.length > 0 ? SHORT_ROOM : SHORT_ALONE) * width) rooms.add(s);
+    if (axis.slope === 0 || length >= SHORT_CORNER * width || others.some((list) => list.length === 0))
+      return;
+    const goesOn = ends.some((mine, k) =>
+      others[k].some(({ strip, end }) => {
+        const { ux, uy } = strips[strip].ends[end];
+        return mine.ux * ux + mine.uy * uy < 0 && Math.abs(mine.ux * uy - mine.uy * ux) < GOES_ON;
+      }),
+    );
+    if (!goesOn) rooms.add(s);
   });
   if (rooms.size === 0) return all;
   // The knots at both ends of a room become one, with the room's ground in it.

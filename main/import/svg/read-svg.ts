@@ -2,7 +2,7 @@ import { unitSize } from '../../../solver/chip/units.ts';
 import { Problem } from '../../../solver/problem/problem.ts';
 import { type Affine, compose, growth, isSimilar, moved, SAME, shift } from '../affine.ts';
 import { ellipsePoints } from '../curves.ts';
-import { circle, type Drawing, evenWidths, Gathering } from '../drawing.ts';
+import { circle, type Drawing, evenWidths, extend, Gathering } from '../drawing.ts';
 import { LIMITS, type Work } from '../work.ts';
 import { type Subpath, subpaths } from './path.ts';
 import { INITIAL, paintKind, readSheet, type Sheet, type Style, styleOf } from './style.ts';
@@ -222,14 +222,17 @@ class Walk {
       return;
     }
     if (!isSimilar(by)) this.to.note('strokes stretched unevenly (taken with their mean width)', where);
-    if (style.linecap === 'round' || style.linecap === 'square') {
-      this.to.note(`${style.linecap} ends of strokes (cut square at the last point)`, where);
-    }
     for (const { vertices, closed } of parts) {
       const own = moved(Float64Array.from(vertices), by, closed);
+      const full = width * growth(by);
+      if (style.linecap === 'square' && !closed) {
+        if (own[2] === 0 && own[own.length - 4] === 0) extend(own, full / 2, full / 2);
+        else this.to.note('square ends of round strokes (cut at the last point)', where);
+      }
+      const round = style.linecap === 'round' && !closed;
       this.to.track(
         layer,
-        { vertices: own, closed, widths: evenWidths(own, closed, width * growth(by)) },
+        { vertices: own, closed, widths: evenWidths(own, closed, full), ...(round && { round }) },
         where,
       );
     }
