@@ -222,7 +222,8 @@ export class EditDraft {
     }
     const before = this.#chip;
     // A limit of the layer would become one of the part that bears the name.
-    const limited = list === 'layers' && !borne(before, id) && before.limits.some(({ where }) => where === id);
+    const limited =
+      list === 'layers' && !borne(before, id) && before.limits.some(({ where }) => where === id);
     if (limited && borne(before, to)) {
       throw this.#present(list, to, start);
     }
