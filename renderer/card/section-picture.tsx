@@ -47,6 +47,7 @@ export function SectionPicture({ layer, width, flow, viscosity, shear: told, mos
   }, [layer.profile, wide, depth]);
   if (typeof made === 'string') return <p className="fault">{made}</p>;
   const { section, curve } = made;
+  const largest = Math.max(...curve.shear);
   // newtonian: the shear per driving gradient is the section's own
   const gradient =
     flow === null || viscosity === null ? null : (viscosity * Math.abs(flow)) / section.conductance;
@@ -55,21 +56,18 @@ export function SectionPicture({ layer, width, flow, viscosity, shear: told, mos
   const middle = (Math.max(...curve.x) + Math.min(...curve.x)) / 2;
   const x = (m: number): number => left + (m - middle) * scale;
   const y = (m: number): number => HIGH / 2 - 8 + (section.depth / 2 - m) * scale;
-  const highest = gradient === null ? 0 : gradient * Math.max(...curve.shear);
+  const highest = gradient === null ? 0 : gradient * largest;
   const unit = unitFor(highest, 'stress');
   const shear = (value: number): string => figureIn((gradient ?? 0) * value, unit, { digits: 3 });
   const bands: readonly Band[] =
-    gradient === null
-      ? []
-      : bandsOf(curve, (i) => (REACH * curve.shear[i]!) / (Math.max(...curve.shear) * scale));
+    gradient === null ? [] : bandsOf(curve, (i) => (REACH * curve.shear[i]!) / (largest * scale));
   const half = section.width / 2;
   const speed = flow === null ? null : (Math.abs(flow) / section.area) * section.peakVelocity;
   const now = scheme();
   const point = ([a, b]: readonly [number, number]): string => `${x(a).toFixed(2)} ${y(b).toFixed(2)}`;
   const outline = Array.from(curve.x, (a, i) => point([a, curve.y[i]!])).join('L');
   const top =
-    y(section.depth) -
-    (layer.profile.kind === 'rectangle' ? (REACH * section.floorShear) / Math.max(...curve.shear) : 0);
+    y(section.depth) - (layer.profile.kind === 'rectangle' ? (REACH * section.floorShear) / largest : 0);
   return (
     <figure className="section-picture">
       <figcaption>

@@ -7,51 +7,80 @@ import type { CellHand, Found } from './thread.ts';
 /** Threads beside the solving thread and the page's own. */
 const THREADS = Math.max(1, Math.min(4, navigator.hardwareConcurrency - 1));
 
+interface Job {
+  readonly cell: CellSpec;
+  readonly accuracy: Accuracy;
+  /** Nobody waits for it yet: what is waited for is put before it, and it is dropped when no longer asked for. */
+  readonly ahead: boolean;
+}
+
+/** A thread and the jobs it has begun, by number. */
+interface Bench {
+  readonly worker: Worker;
+  readonly begun: Map<number, Job>;
+}
+
+/** How cells are solved elsewhere, one order after another; a test may put a function in its place. */
+export type StartWorker = () => Worker;
+const cellWorker: StartWorker = () =>
+  new Worker(new URL('./cell-worker.ts', import.meta.url), { type: 'module', name: 'cells' });
+
 /**
  * Junctions solved on threads of their own, in the order given. A new list replaces what was not begun;
- * what was begun is finished, because it is likely to be wanted again.
+ * what was begun is finished, because it is likely to be wanted again, unless it was begun ahead.
  */
-export function cellHand(): CellHand {
-  let queue: { cell: CellSpec; accuracy: Accuracy }[] = [];
+export function cellHand(start: StartWorker = cellWorker, threads = THREADS): CellHand {
+  let queue: Job[] = [];
   let listener: (cell: CellSpec, accuracy: Accuracy, found: Found, left: number) => void = () => {};
   let last = 0;
-  const begun = new Map<number, { cell: CellSpec; accuracy: Accuracy }>();
-  const idle: Worker[] = [];
+  const benches: Bench[] = [];
 
+  const waitedFor = (): number => queue.length + benches.reduce((sum, { begun }) => sum + begun.size, 0);
+  /** A thread that can take the job: one without work, else one whose work nobody waits for. */
+  const free = (job: Job): Bench | undefined =>
+    benches.find(({ begun }) => begun.size === 0) ??
+    (job.ahead ? undefined : benches.find(({ begun }) => [...begun.values()].every(({ ahead }) => ahead)));
   const next = (): void => {
-    while (idle.length > 0 && queue.length > 0) {
-      const worker = idle.pop()!;
-      const job = queue.shift()!;
+    for (let job = queue[0]; job; job = queue[0]) {
+      const bench = free(job);
+      if (!bench) return;
+      queue.shift();
       last += 1;
-      begun.set(last, job);
+      bench.begun.set(last, job);
       const { shape, name } = job.cell;
-      worker.postMessage({ id: last, shape, name, accuracy: job.accuracy } satisfies CellOrder);
+      const order: CellOrder = { kind: 'solve', id: last, shape, name, accuracy: job.accuracy };
+      bench.worker.postMessage(order);
     }
   };
-  for (let i = 0; i < THREADS; i += 1) {
-    const worker = new Worker(new URL('./cell-worker.ts', import.meta.url), {
-      type: 'module',
-      name: 'cells',
-    });
-    worker.addEventListener('message', ({ data }: MessageEvent<CellNews>) => {
-      const job = begun.get(data.id);
-      begun.delete(data.id);
-      idle.push(worker);
-      if (job) {
-        const { kind, what, where, remedy } = 'problem' in data ? data.problem : ({} as never);
-        const found = 'problem' in data ? new Problem(kind, what, where, remedy) : data;
-        listener(job.cell, job.accuracy, found, queue.length + begun.size);
-      }
+  for (let i = 0; i < threads; i += 1) {
+    const bench: Bench = { worker: start(), begun: new Map() };
+    bench.worker.addEventListener('message', ({ data }: MessageEvent<CellNews>) => {
+      const job = bench.begun.get(data.id);
+      // one that was dropped may have been ready already
+      if (!job) return;
+      bench.begun.delete(data.id);
+      const { kind, what, where, remedy } = 'problem' in data ? data.problem : ({} as never);
+      const found = 'problem' in data ? new Problem(kind, what, where, remedy) : data;
+      listener(job.cell, job.accuracy, found, waitedFor());
       next();
     });
-    idle.push(worker);
+    benches.push(bench);
   }
   return {
-    solve(cells, accuracy) {
-      const under = new Set(
-        [...begun.values()].filter((job) => job.accuracy.flow <= accuracy.flow).map(({ cell }) => cell),
-      );
-      queue = cells.filter((cell) => !under.has(cell)).map((cell) => ({ cell, accuracy }));
+    solve(cells, accuracy, ahead = false) {
+      const wanted = new Set(cells);
+      const under = new Set<CellSpec>();
+      for (const { worker, begun } of benches)
+        for (const [id, job] of begun) {
+          if (wanted.has(job.cell) && job.accuracy.flow <= accuracy.flow) {
+            under.add(job.cell);
+            begun.set(id, { ...job, ahead: job.ahead && ahead });
+          } else if (job.ahead) {
+            begun.delete(id);
+            worker.postMessage({ kind: 'drop', id } satisfies CellOrder);
+          }
+        }
+      queue = cells.filter((cell) => !under.has(cell)).map((cell) => ({ cell, accuracy, ahead }));
       next();
     },
     listen(given) {

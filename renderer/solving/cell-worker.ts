@@ -1,8 +1,9 @@
 import { memoryStore } from '../../solver/cell/store.ts';
 import { warmUp } from '../../solver/cell/warm-up.ts';
-import { solveOrdered } from '../../solver/lump/cell-order.ts';
+import { orderedSteps } from '../../solver/lump/cell-order.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import type { CellNews, CellOrder } from './messages.ts';
+import { afterMessages } from './turn.ts';
 
 interface Scope {
   postMessage(news: CellNews): void;
@@ -12,13 +13,36 @@ const scope = globalThis as unknown as Scope;
 
 /** What this thread solved itself: copies of one shape in one chip are asked for one after the other. */
 const kept = memoryStore(32e6);
+const later = afterMessages();
 
-scope.addEventListener('message', ({ data: { id, shape, name, accuracy } }) => {
-  const found = solveOrdered(shape, accuracy, name, kept);
-  if (found instanceof Problem) {
-    const { kind, what, where, remedy } = found;
-    scope.postMessage({ id, problem: { kind, what, where, remedy } });
-  } else scope.postMessage({ id, ...found });
+/** Orders begun, the newest last: it goes on first. */
+let begun: { readonly id: number; readonly steps: ReturnType<typeof orderedSteps> }[] = [];
+let going = false;
+
+const goOn = (): void => {
+  const job = begun.at(-1);
+  going = job !== undefined;
+  if (!job) return;
+  const step = job.steps.next();
+  if (step.done) {
+    begun = begun.filter((other) => other !== job);
+    const found = step.value;
+    if (found instanceof Problem) {
+      const { kind, what, where, remedy } = found;
+      scope.postMessage({ id: job.id, problem: { kind, what, where, remedy } });
+    } else scope.postMessage({ id: job.id, ...found });
+  }
+  later(goOn);
+};
+
+scope.addEventListener('message', ({ data }) => {
+  if (data.kind === 'drop') {
+    begun = begun.filter(({ id }) => id !== data.id);
+    return;
+  }
+  const { id, shape, name, accuracy } = data;
+  begun.push({ id, steps: orderedSteps(shape, accuracy, name, kept) });
+  if (!going) goOn();
 });
 
 warmUp();

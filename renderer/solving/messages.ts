@@ -7,6 +7,8 @@ import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { ProblemKind } from '../../solver/problem/problem.ts';
 import type { SolveOptions } from '../../solver/solve.ts';
+import type { Answer } from '../verdict/answer.ts';
+import type { UnitHabit } from '../words/figure.ts';
 
 /** What the page tells the solving thread; `id` grows by one with every chip it means. */
 export type Order =
@@ -21,6 +23,10 @@ export type Order =
   | { readonly kind: 'cancel'; readonly id: number }
   /** What is to be drawn inside a solved junction, with the flows of the newest answer. */
   | { readonly kind: 'picture'; readonly id: number; readonly cell: string; readonly lines: number }
+  /** The whole of the newest answer, which was told in short. */
+  | { readonly kind: 'rest' }
+  /** The units in which a person reads figures. */
+  | { readonly kind: 'speak'; readonly units: UnitHabit }
   /** The part of the plan that is on screen, nm: its junctions come first. */
   | { readonly kind: 'look'; readonly box: PlanBox }
   /** Solved junctions that the project had kept, in answer to 'want'. */
@@ -56,13 +62,16 @@ export type Outcome =
   | { readonly ok: true; readonly result: Result }
   | { readonly ok: false; readonly problem: Refused };
 
-/** A junction for a cell thread to solve; `id` is the asker's. */
-export interface CellOrder {
-  readonly id: number;
-  readonly shape: CellShape;
-  readonly name: string;
-  readonly accuracy: Accuracy;
-}
+/** A junction for a cell thread to solve, or to be left as it is; `id` is the asker's. */
+export type CellOrder =
+  | {
+      readonly kind: 'solve';
+      readonly id: number;
+      readonly shape: CellShape;
+      readonly name: string;
+      readonly accuracy: Accuracy;
+    }
+  | { readonly kind: 'drop'; readonly id: number };
 
 export type CellNews = { readonly id: number } & (
   | { readonly key: string; readonly solution: ShapeSolution }
@@ -79,6 +88,14 @@ export interface Answered {
 }
 
 export type News =
+  /** The newest answer in five sentences; the whole of it follows when 'rest' asks for it. */
+  | {
+      readonly kind: 'short';
+      readonly id: number;
+      readonly answers: readonly Answer[];
+      /** ms since 1970 when the answer was begun and when it was ready, for whoever measures. */
+      readonly times: { readonly began: number; readonly ready: number };
+    }
   | ({ readonly kind: 'solved'; readonly id: number } & Answered)
   /** Of what is being dragged: to preview accuracy, to be looked at and not to be kept. */
   | ({ readonly kind: 'dragged'; readonly id: number } & Answered)

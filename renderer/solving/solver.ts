@@ -4,6 +4,8 @@ import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { SolveOptions } from '../../solver/solve.ts';
 import { createStore, type Store } from '../state/store.ts';
+import type { Answer } from '../verdict/answer.ts';
+import type { UnitHabit } from '../words/figure.ts';
 import type { KeptCell, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 
 /** The newest answer and what it is of. */
@@ -50,6 +52,8 @@ export interface Thread {
 
 export interface Solver {
   readonly solved: Store<Solved>;
+  /** The five answers of a newer result that is on its way, in its stead; null when it is there. */
+  readonly short: Store<readonly Answer[] | null>;
   /** Null while nothing is dragged, and until the first answer to it. */
   readonly live: Store<Live | null>;
   load(chip: Chip, options: SolveOptions): void;
@@ -64,6 +68,8 @@ export interface Solver {
   picture(cell: string, lines: number): Promise<PlacedPicture | null>;
   /** What is on screen: its junctions are solved before the others. */
   look(box: PlanBox): void;
+  /** The units in which a person reads figures. */
+  speak(units: UnitHabit): void;
   end(): void;
 }
 
@@ -74,8 +80,14 @@ export interface KeptCells {
 }
 const NOWHERE: KeptCells = { get: () => Promise.resolve([]), put: () => undefined };
 
-export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver {
+/** @param painted calls when the next frame is on screen */
+export function createSolver(
+  thread: Thread,
+  kept: KeptCells = NOWHERE,
+  painted: (then: () => void) => void = nextPaint,
+): Solver {
   const solved = createStore<Solved>(NOTHING);
+  const short = createStore<readonly Answer[] | null>(null);
   const live = createStore<Live | null>(null);
   /** Chips as they would be, by number; empty when the hand has let go. */
   const dragged = new Map<number, { readonly chip: Chip; readonly drawn?: string | null }>();
@@ -101,6 +113,11 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
     if (news.kind === 'pictured') {
       pictures.get(news.id)?.(news.picture);
       pictures.delete(news.id);
+      return;
+    }
+    if (news.kind === 'short') {
+      if (asked.has(news.id) || news.id === newest) short.set(news.answers);
+      painted(() => thread.post({ kind: 'rest' }));
       return;
     }
     if (news.kind === 'want') {
@@ -136,6 +153,7 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
     if (!chip) return;
     for (const id of [...asked.keys()]) if (id <= news.id) asked.delete(id);
     const busy = news.id !== newest;
+    short.set(null);
     solved.set({
       chip,
       ...told(news.outcome),
@@ -150,6 +168,7 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
 
   return {
     solved,
+    short,
     live,
     load(chip, options) {
       const id = next();
@@ -158,6 +177,7 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
       asked.set(id, chip);
       dragged.clear();
       live.set(null);
+      short.set(null);
       solved.set({ ...NOTHING, busy: true });
       thread.post({ kind: 'load', id, chip, options });
     },
@@ -203,6 +223,7 @@ export function createSolver(thread: Thread, kept: KeptCells = NOWHERE): Solver 
       });
     },
     look: (box) => thread.post({ kind: 'look', box }),
+    speak: (units) => thread.post({ kind: 'speak', units }),
     end: () => thread.end(),
   };
 }
@@ -218,6 +239,31 @@ function withoutOpenEnd(result: Result, drawn: string | null | undefined): Resul
 
 const told = (outcome: Outcome): { readonly result: Result | null; readonly problem: Refused | null } =>
   outcome.ok ? { result: outcome.result, problem: null } : { result: null, problem: outcome.problem };
+
+/** ms after which a page that paints nothing, because nobody sees it, goes on all the same. */
+const UNSEEN = 100;
+
+/** When the next frame is painted; at once where there are no frames. */
+function nextPaint(then: () => void): void {
+  if (typeof requestAnimationFrame === 'undefined') {
+    then();
+    return;
+  }
+  let done = false;
+  const once = (): void => {
+    if (done) return;
+    done = true;
+    then();
+  };
+  const unseen = setTimeout(once, UNSEEN);
+  requestAnimationFrame(() => {
+    clearTimeout(unseen);
+    // a message comes after the frame that is being made
+    const { port1, port2 } = new MessageChannel();
+    port1.onmessage = once;
+    port2.postMessage(null);
+  });
+}
 
 /** The real thread. */
 export function workerThread(): Thread {

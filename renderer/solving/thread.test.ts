@@ -1,21 +1,30 @@
 import { expect, test } from 'vitest';
 import { type Accuracy, PREVIEW_ACCURACY } from '../../solver/cell/cell.ts';
 import type { CellSpec } from '../../solver/cell/cut/spec.ts';
+import { memoryStore } from '../../solver/cell/store.ts';
+import { solveOrdered } from '../../solver/lump/cell-order.ts';
 import { Problem } from '../../solver/problem/problem.ts';
+import { solve } from '../../solver/solve.ts';
 import { teeChip } from '../testing/chips.ts';
+import { verdicts } from '../verdict/verdicts.ts';
 import type { News } from './messages.ts';
 import { type CellHand, solvingThread } from './thread.ts';
 
-/** The thread with a hand that finds nothing, each step of both taken one by one. */
-function bench() {
+/**
+ * The thread with a hand that finds nothing, or what there is to be found; each step of both, and of the
+ * clock, taken one by one.
+ */
+function bench(finds = false) {
   const news: News[] = [];
   const works: (() => void)[] = [];
-  const handed: { cells: readonly CellSpec[]; accuracy: Accuracy }[] = [];
+  const timers: (() => void)[] = [];
+  const store = memoryStore();
+  const handed: { cells: readonly CellSpec[]; accuracy: Accuracy; ahead: boolean }[] = [];
   let queue: { cell: CellSpec; accuracy: Accuracy }[] = [];
   let listener: Parameters<CellHand['listen']>[0] = () => undefined;
   const hand: CellHand = {
-    solve(cells, accuracy) {
-      handed.push({ cells, accuracy });
+    solve(cells, accuracy, ahead = false) {
+      handed.push({ cells, accuracy, ahead });
       queue = cells.map((cell) => ({ cell, accuracy }));
     },
     listen(given) {
@@ -27,9 +36,12 @@ function bench() {
       news.push(told);
       // the project has kept nothing
       if (told.kind === 'want') works.push(() => order({ kind: 'kept', cells: [] }));
+      // the page has painted it
+      if (told.kind === 'short') works.push(() => order({ kind: 'rest' }));
     },
     (work) => works.push(work),
     hand,
+    (work) => timers.push(work),
   );
   /** Works until there is nothing left to do; false where there is no end to it. */
   const settle = (): boolean => {
@@ -37,15 +49,24 @@ function bench() {
       const work = works.shift();
       const job = work ? undefined : queue.shift();
       if (work) work();
-      else if (job)
-        listener(job.cell, job.accuracy, new Problem('memory', 'Not now.', '', 'Wait.'), queue.length);
-      else return true;
+      else if (job) {
+        const { cell, accuracy } = job;
+        const found = finds
+          ? solveOrdered(cell.shape, accuracy, cell.name, store)
+          : new Problem('memory', 'Not now.', '', 'Wait.');
+        listener(cell, accuracy, found, queue.length);
+      } else return true;
     }
     return false;
   };
   const of = <K extends News['kind']>(kind: K) =>
     news.filter((told): told is Extract<News, { kind: K }> => told.kind === kind);
-  return { order, settle, of, handed, step: () => works.shift()?.() };
+  /** What waits for time to pass is done once. */
+  const wait = (): boolean => {
+    for (const timer of timers.splice(0)) timer();
+    return settle();
+  };
+  return { order, settle, wait, of, handed, step: () => works.shift()?.() };
 }
 
 const closedWell = {
@@ -136,4 +157,67 @@ test('junctions on screen are handed out before the others', () => {
   expect(seen[0]).toMatch(/^bend/);
   expect([...seen].sort()).toEqual([...drawn].sort());
   expect(seen.slice(1)).toEqual(drawn.filter((name) => name !== seen[0]));
+});
+
+const FAIR = { accuracy: 0.02 } as const;
+
+test('the five answers come first, and are those of the whole answer that follows', () => {
+  const { order, settle, of } = bench();
+  const chip = teeChip();
+  order({ kind: 'load', id: 1, chip, options: {} });
+  expect(settle()).toBe(true);
+  const { outcome, waiting } = of('solved').at(-1)!;
+  const { answers, id } = of('short').at(-1)!;
+  expect(id).toBe(1);
+  expect(outcome.ok).toBe(true);
+  if (outcome.ok) expect(answers).toEqual(verdicts({ chip, result: outcome.result, trouble: '', waiting }));
+  order({ kind: 'edit', id: 2, edit: closedWell });
+  expect(settle()).toBe(true);
+  const stopped = of('solved').at(-1)!.outcome;
+  expect(stopped.ok).toBe(false);
+  if (!stopped.ok)
+    expect(of('short').at(-1)!.answers[0]!.says).toEqual([expect.stringContaining(stopped.problem.what)]);
+});
+
+test('where the hand rests, what it holds is solved ahead; let go there, it is answered at once', () => {
+  const { order, settle, wait, of, handed } = bench(true);
+  const chip = teeChip();
+  order({ kind: 'load', id: 1, chip, options: FAIR });
+  expect(settle()).toBe(true);
+  const moved = chip.channels[1]!;
+  const part = { ...moved, width: [90_000, 90_000] as const };
+  const changes = [{ kind: 'put' as const, list: 'channels' as const, id: moved.id, part }];
+  order({ kind: 'drag', id: 2, edit: { label: 'as it would be', changes } });
+  expect(settle()).toBe(true);
+  expect(handed.at(-1)).toMatchObject({ accuracy: PREVIEW_ACCURACY, ahead: false });
+  const dragged = of('dragged').length;
+  expect(wait()).toBe(true);
+  const ahead = handed.at(-1)!;
+  expect(ahead).toMatchObject({ ahead: true, accuracy: { flow: 0.02 } });
+  expect(ahead.cells.length).toBeGreaterThan(0);
+  // what is held goes on being shown as rough as it was
+  expect(of('dragged').length).toBe(dragged);
+  expect(of('solved').every(({ id }) => id === 1)).toBe(true);
+
+  order({ kind: 'edit', id: 3, edit: { label: 'widen the outlet', changes } });
+  order({ kind: 'drag', id: 4, edit: null });
+  expect(settle()).toBe(true);
+  const answers = of('solved').filter(({ id }) => id === 3);
+  expect(answers[0]).toMatchObject({ waiting: 0, outcome: { ok: true } });
+  const { outcome } = answers[0]!;
+  const fresh = solve({ ...chip, channels: chip.channels.map((one) => (one === moved ? part : one)) }, FAIR);
+  if (outcome.ok) expect(outcome.result).toEqual(fresh);
+});
+
+test('solved junctions are handed over to be kept when it has been quiet', () => {
+  const { order, settle, wait, of } = bench(true);
+  order({ kind: 'load', id: 1, chip: teeChip(), options: FAIR });
+  expect(settle()).toBe(true);
+  expect(of('keep')).toEqual([]);
+  const began = performance.now();
+  while (of('keep').length === 0 && performance.now() - began < 60_000) expect(wait()).toBe(true);
+  expect(of('keep').length).toBeGreaterThan(0);
+  for (let i = 0; i < 10; i += 1) expect(wait()).toBe(true);
+  const keys = of('keep').map(({ cell }) => cell.key);
+  expect(new Set(keys).size).toBe(keys.length);
 });

@@ -5,28 +5,43 @@ import { cellPicture } from '../../solver/cell/picture.ts';
 import { cellKey } from '../../solver/cell/solve-cell.ts';
 import { memoryStore } from '../../solver/cell/store.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
-import { applyEdit } from '../../solver/chip/edit.ts';
+import { applyEdit, type ChipEdit } from '../../solver/chip/edit.ts';
 import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
-import { knownSolution, settleWaiting } from '../../solver/lump/cells.ts';
+import { knownSolution, lackingCells, settleWaiting } from '../../solver/lump/cells.ts';
 import { emptyMemory } from '../../solver/memory.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { accuracyOf, type SolveOptions, solve } from '../../solver/solve.ts';
+import { verdicts } from '../verdict/verdicts.ts';
+import { showIn } from '../words/figure.ts';
 import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 
 /** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
 export interface CellHand {
-  solve(cells: readonly CellSpec[], accuracy: Accuracy): void;
-  /** `put` the finding into memory, then say so by `listener`. */
+  /** @param ahead nobody waits for them yet: they must not keep those waiting who do */
+  solve(cells: readonly CellSpec[], accuracy: Accuracy, ahead?: boolean): void;
   /** `left` is how many of the newest list are still to come. */
   listen(listener: (cell: CellSpec, accuracy: Accuracy, found: Found, left: number) => void): void;
 }
 /** An answer is given anew for a junction that came only after this many times as long as one takes. */
 const PATIENCE = 3;
+/** ms that the hand rests before what it holds is solved as it would be once let go. */
+const REST = 60;
+/** ms without an order before solved junctions are handed over to be kept, and how many of them may wait. */
+const QUIET = 700;
+const MOST_UNKEPT = 64;
 /** Bytes of solved junctions held beside those in use; the project keeps the others. */
 const MOST_KEPT = 96e6;
 /** Keys asked for at once, within what a request may carry. */
 const MOST_WANTED = 256;
+
+/** An answer, and what it was made of. */
+interface Fresh {
+  readonly graph: Graph | null;
+  readonly outcome: Outcome;
+  readonly waiting: readonly CellSpec[];
+  readonly began: number;
+}
 
 export type Found = { readonly key: string; readonly solution: ShapeSolution } | Problem;
 
@@ -35,12 +50,14 @@ export type Found = { readonly key: string; readonly solution: ShapeSolution } |
  * being solved are taken together, so that it is always the newest chip that is answered. With `hand`
  * an answer never waits for junctions: those not known yet count as ideal, and the answer is given
  * again as they come. While something is dragged, the chip as it would be is answered beside it, its
- * junctions to preview accuracy; nothing of that is kept.
+ * junctions to preview accuracy; nothing of that is kept. Where the hand rests, they are solved as they
+ * would be once it lets go.
  */
 export function solvingThread(
   tell: (news: News) => void,
   later: (work: () => void) => void,
   hand: CellHand | null = null,
+  after: (work: () => void, ms: number) => void = (work, ms) => setTimeout(work, ms),
 ): (order: Order) => void {
   let memory = emptyMemory(memoryStore(MOST_KEPT));
   let chip: Chip | null = null;
@@ -50,16 +67,33 @@ export function solvingThread(
   let asked = false;
   let due = false;
   let dragDue = false;
-  let drag: { readonly id: number; readonly chip: Chip } | null = null;
+  /** The chip as it would be, and what it would be made from by which edit. */
+  let drag: {
+    readonly id: number;
+    readonly chip: Chip;
+    readonly base: Chip;
+    readonly edit: ChipEdit;
+  } | null = null;
   let sent: Graph | null = null;
+  /** The newest answer where it was told in short and not yet asked for as a whole. */
+  let rest: { readonly id: number; readonly fresh: Fresh } | null = null;
   let look: PlanBox | null = null;
   /** What pictures are drawn of: the chip answered last. */
   let last: { readonly chip: Chip; readonly result: Result } | null = null;
   /** The newest chip has no result, whatever its junctions are. */
   let stuck = false;
+  /** Whether the chip is no longer the one that was opened. */
+  let edited = false;
+  /** Whether the last answer was the newest chip's own, with all that was known of its junctions then. */
+  let settled = false;
   /** ms: when the last answer was ready, and how long it took. */
   let ready = 0;
   let took = 0;
+  /** ms: when the last order came. */
+  let ordered = 0;
+  /** Solved and not yet handed over to be kept, by key. */
+  const unkept = new Map<string, ShapeSolution>();
+  let keeping = false;
   /** Keys the project was asked for, and answers of it that are still to come. */
   const wanted = new Set<string>();
   let open = 0;
@@ -82,7 +116,10 @@ export function solvingThread(
     return [...waiting.filter(seen), ...waiting.filter((cell) => !seen(cell))];
   };
 
-  /** First the project is asked for what it kept, then what it has not is solved. */
+  /**
+   * The project is asked for what it kept, once for each junction. Of a chip that was just opened nothing is
+   * solved before it has answered; after an edit it rarely has what is new, and is not waited for.
+   */
   const handOn = (waiting: readonly CellSpec[]): void => {
     if (!hand) return;
     const fresh = keysOf(waiting).filter((key) => !wanted.has(key));
@@ -92,11 +129,34 @@ export function solvingThread(
       tell({ kind: 'want', keys: fresh });
     }
     // Anew each time: one that came may have been a copy of others.
-    if (open === 0) hand.solve(seenFirst(waiting), accuracyOf(options));
+    if (open === 0 || edited) hand.solve(seenFirst(waiting), accuracyOf(options));
   };
 
-  /** Solves a chip in haste and sends it; what its junctions still wait for. */
-  const send = (which: Chip, preview: boolean, news: (answer: Answered) => News): readonly CellSpec[] => {
+  /** Hands over what was solved, one by one, while nobody waits for an answer. */
+  const keep = (): void => {
+    const [oldest] = unkept;
+    keeping = oldest !== undefined;
+    if (!oldest) return;
+    if (unkept.size <= MOST_UNKEPT) {
+      const quiet = performance.now() - Math.max(ordered, ready);
+      if (drag || asked || quiet < QUIET) {
+        after(keep, QUIET);
+        return;
+      }
+    }
+    const [key, solution] = oldest;
+    unkept.delete(key);
+    tell({ kind: 'keep', cell: { key, bytes: encodeSolution(solution) } });
+    after(keep, 0);
+  };
+  const keepLater = (key: string, solution: ShapeSolution): void => {
+    unkept.set(key, solution);
+    if (!keeping) after(keep, QUIET);
+    keeping = true;
+  };
+
+  /** Solves a chip in haste; with what its junctions still wait for. */
+  const answerTo = (which: Chip, preview: boolean): Fresh => {
     const began = performance.now();
     // a chip that cannot be solved gets no further than the one before it: its junctions are not wanted
     memory.cells.waiting = [];
@@ -109,25 +169,54 @@ export function solvingThread(
     }
     last = outcome.ok ? { chip: which, result: outcome.result } : null;
     stuck = !outcome.ok;
-    const waiting = outcome.ok ? memory.cells.waiting : [];
-    tell(news({ graph: graph && graph === sent ? 'same' : graph, outcome, waiting: waiting.length }));
-    sent = graph;
+    settled = !preview;
     ready = performance.now();
     took = ready - began;
-    return waiting;
+    return { graph, outcome, waiting: outcome.ok ? memory.cells.waiting : [], began };
+  };
+  const whole = ({ graph, outcome, waiting }: Fresh): Answered => {
+    const known = graph && graph === sent;
+    sent = graph;
+    return { graph: known ? 'same' : graph, outcome, waiting: waiting.length };
+  };
+  /** The answer in short, which is soon there and soon shown; the whole of it is sent when it is asked for. */
+  const tellShort = (which: Chip, fresh: Fresh): void => {
+    const { outcome, waiting, began } = fresh;
+    rest = { id: newest, fresh };
+    const answers = verdicts({
+      chip: which,
+      result: outcome.ok ? outcome.result : null,
+      trouble: outcome.ok ? '' : `${outcome.problem.what} ${outcome.problem.remedy}`,
+      waiting: waiting.length,
+    });
+    const { timeOrigin } = performance;
+    const times = { began: timeOrigin + began, ready: timeOrigin + performance.now() };
+    tell({ kind: 'short', id: newest, answers, times });
   };
   const answer = (): void => {
     asked = false;
     if (!chip) return;
     if (due) {
       due = false;
-      handOn(send(chip, false, (answered) => ({ kind: 'solved', id: newest, ...answered })));
+      const fresh = answerTo(chip, false);
+      tellShort(chip, fresh);
+      handOn(fresh.waiting);
     }
     if (!dragDue || !drag) return;
     dragDue = false;
     const { id } = drag;
-    const waiting = send(drag.chip, true, (answered) => ({ kind: 'dragged', id, ...answered }));
+    const fresh = answerTo(drag.chip, true);
+    const { waiting } = fresh;
+    tell({ kind: 'dragged', id, ...whole(fresh) });
     hand?.solve(waiting, PREVIEW_ACCURACY);
+    if (hand && waiting.length === 0 && !stuck)
+      after(() => solveAhead(id), Math.max(0, REST - performance.now() + ordered));
+  };
+  /** What would be asked for if the hand let go here, where it still is. */
+  const solveAhead = (id: number): void => {
+    if (!hand || drag?.id !== id || asked) return;
+    const accuracy = accuracyOf(options);
+    hand.solve(lackingCells(memory.cut(drag.chip).cells, accuracy, memory.cells), accuracy, true);
   };
   const work = (): void => {
     if (asked) return;
@@ -145,9 +234,12 @@ export function solvingThread(
   hand?.listen((cell, accuracy, found, left) => {
     settleWaiting(cell, accuracy, found, memory.cells);
     if (!(found instanceof Problem) && accuracy.flow <= accuracyOf(options).flow) {
-      tell({ kind: 'keep', cell: { key: found.key, bytes: encodeSolution(found.solution) } });
+      keepLater(found.key, found.solution);
     }
+    settled = false;
     if (stuck) return;
+    // what is held is shown to preview accuracy, and that it has been
+    if (drag && accuracy !== PREVIEW_ACCURACY) return;
     // answers to a large chip are not given for every single junction, but always for the last
     if (left > 0 && performance.now() - ready < PATIENCE * took) return;
     if (drag) dragSoon();
@@ -169,11 +261,20 @@ export function solvingThread(
   };
 
   return (order) => {
+    ordered = performance.now();
     switch (order.kind) {
       case 'picture':
         return tell({ kind: 'pictured', id: order.id, picture: pictureOf(order.cell, order.lines) });
       case 'look':
         look = order.box;
+        return;
+      case 'speak':
+        showIn(order.units);
+        return;
+      case 'rest':
+        // a newer answer may have taken its place, or have been asked for already
+        if (rest) tell({ kind: 'solved', id: rest.id, ...whole(rest.fresh) });
+        rest = null;
         return;
       case 'kept':
         open -= 1;
@@ -185,11 +286,14 @@ export function solvingThread(
       case 'load':
         memory = emptyMemory(memoryStore(MOST_KEPT));
         wanted.clear();
+        unkept.clear();
         open = 0;
+        edited = false;
         chip = order.chip;
         options = order.options;
         newest = order.id;
         sent = null;
+        rest = null;
         last = null;
         drag = null;
         return soon();
@@ -197,7 +301,8 @@ export function solvingThread(
         if (!chip) return;
         if (order.edit) {
           try {
-            drag = { id: order.id, chip: applyEdit(chip, order.edit) };
+            const { id, edit } = order;
+            drag = { id, chip: applyEdit(chip, edit), base: chip, edit };
             dragSoon();
           } catch {
             // there it could not stay: the answer before it stands
@@ -206,13 +311,17 @@ export function solvingThread(
         }
         if (!drag) return;
         drag = null;
-        // junctions that came meanwhile were not put into the chip's own answer
-        return soon();
+        // what was answered last may be what was held, or without junctions that came meanwhile
+        if (!settled || memory.cells.waiting.length > 0) soon();
+        return;
       }
       case 'edit':
         if (!chip) return;
-        chip = applyEdit(chip, order.edit);
+        // what the hand lets go of was read and cut already
+        chip =
+          drag?.base === chip && sameChanges(drag.edit, order.edit) ? drag.chip : applyEdit(chip, order.edit);
         newest = order.id;
+        edited = true;
         return soon();
       case 'try': {
         if (!chip) return;
@@ -240,6 +349,9 @@ export function solvingThread(
     }
   };
 }
+
+const sameChanges = (a: ChipEdit, b: ChipEdit): boolean =>
+  JSON.stringify(a.changes) === JSON.stringify(b.changes);
 
 /** Keys of the shapes, each once; a shape that cannot be solved has none. */
 function keysOf(cells: readonly CellSpec[]): string[] {

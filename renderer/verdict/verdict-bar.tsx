@@ -8,22 +8,27 @@ import { verdicts } from './verdicts.ts';
 
 /** The five questions, always on screen. */
 export function VerdictBar() {
-  const { desk, commands } = usePage();
+  const { desk, commands, preferences } = usePage();
   const project = useStore(desk.project)!;
   const solved = useAnswer(desk);
   const { chip } = project.document;
+  const { units } = useStore(preferences.store);
+  useEffect(() => desk.solver.speak(units), [desk, units]);
   const busy = solved.busy || solved.waiting > 0;
-  const answers = useMemo(
+  // a newer result's five answers are here before it
+  const short = useStore(desk.solver.short);
+  const own = useMemo(
     () =>
       verdicts({
         chip: solved.chip ?? chip,
         result: solved.result,
-        trouble: solved.problem ? `${solved.problem.what} ${solved.problem.remedy}` : '',
+        trouble: solved.problem?.what ?? '',
         waiting: solved.waiting,
         preview: solved.preview,
       }),
     [chip, solved.chip, solved.result, solved.problem, solved.waiting, solved.preview],
   );
+  const answers = short ?? own;
   return (
     <section
       className="verdicts"

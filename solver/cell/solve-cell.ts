@@ -4,7 +4,8 @@ import { checkCell } from './check-cell.ts';
 import { equivalent } from './equivalent.ts';
 import { holeResistances, inSeries, seriesError } from './rim.ts';
 import type { CellShape } from './shape.ts';
-import { solveShape } from './solve-shape.ts';
+import { shapeSteps } from './solve-shape.ts';
+import { finished, type Steps } from './steps.ts';
 import { type CellStore, serves } from './store.ts';
 
 /** Part of every key: raise it whenever results change, so that what older versions kept is not used. */
@@ -20,13 +21,23 @@ export function solveCell(
   store?: CellStore,
   where = '',
 ): CellSolution {
+  return finished(cellSteps(shape, accuracy, store, where));
+}
+
+/** As `solveCell`, step by step: what is left before the last step has put nothing into the store. */
+export function* cellSteps(
+  shape: CellShape,
+  accuracy: Accuracy,
+  store: CellStore | undefined,
+  where: string,
+): Steps<CellSolution> {
   checkCell(shape, where);
   const { shape: extruded, error: profileError, peak } = equivalent(shape, where);
   const copy = canonical(extruded);
   const key = `${CELL_VERSION} ${copy.key}`;
   let solved: ShapeSolution | undefined = store?.get(key);
   if (!solved || !serves(solved, accuracy)) {
-    solved = solveShape(copy.shape, accuracy, where);
+    solved = yield* shapeSteps(copy.shape, accuracy, where);
     store?.put(key, solved);
   }
   const { placements } = copy;

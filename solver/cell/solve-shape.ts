@@ -7,6 +7,7 @@ import { mostTriangles } from './memory.ts';
 import { peakOfFields } from './peak.ts';
 import { planMesh } from './plan-mesh.ts';
 import { type CellShape, sharpCorners } from './shape.ts';
+import { finished, type Steps } from './steps.ts';
 
 /** Of the pressure iteration where the result is kept. */
 const TIGHT = 2e-9;
@@ -24,11 +25,16 @@ const FINEST = 0.25;
 /** Power of the refinement at fillets that the rest of the mesh takes part in. */
 const ELSEWHERE = 0.5;
 
+/** As `shapeSteps`, in one go. */
+export const solveShape = (shape: CellShape, accuracy: Accuracy, where: string): ShapeSolution =>
+  finished(shapeSteps(shape, accuracy, where));
+
 /**
  * Solves a shape of depth 1 on two meshes and with two numbers of depth modes, refines until the asked
- * accuracy is met (or memory, rounds or modes run out: the errors then say what was reached).
+ * accuracy is met (or memory, rounds or modes run out: the errors then say what was reached). Between its
+ * steps, a few ms each for an ordinary junction, something else may be done, or it may be left for good.
  */
-export function solveShape(shape: CellShape, accuracy: Accuracy, where: string): ShapeSolution {
+export function* shapeSteps(shape: CellShape, accuracy: Accuracy, where: string): Steps<ShapeSolution> {
   const { faces } = shape;
   const sharp = sharpCorners(shape.loops).length > 0;
   const peak = sharp ? null : accuracy.peak;
@@ -51,9 +57,11 @@ export function solveShape(shape: CellShape, accuracy: Accuracy, where: string):
   /** How far the two meshes lie apart: in coarseness, and along arcs. */
   let apart: Apart = { mesh: APART, arcs: APART };
   let judge = solveLevel(level(APART, APART), modes, loose);
+  yield;
   let fine = solveLevel(level(1, 1), modes, loose, judge);
   let bounds: Bounds;
   for (let round = 1; ; round += 1) {
+    yield;
     const fewer = modes > 1 ? solveLevel(judge.level, modes - 1, loose, judge) : null;
     bounds = {
       flow: flowError(fine, judge, fewer, coarseness, apart.mesh, slender, faces),
@@ -94,6 +102,7 @@ export function solveShape(shape: CellShape, accuracy: Accuracy, where: string):
       fine = solveLevel(fine.level, modes, loose, fine);
     }
   }
+  yield;
   const kept = tighten(fine, TIGHT);
   return {
     faces,

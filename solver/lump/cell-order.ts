@@ -1,6 +1,7 @@
 import type { Accuracy, ShapeSolution } from '../cell/cell.ts';
 import type { CellShape } from '../cell/shape.ts';
-import { solveCell } from '../cell/solve-cell.ts';
+import { cellSteps } from '../cell/solve-cell.ts';
+import { finished, type Steps } from '../cell/steps.ts';
 import type { CellStore } from '../cell/store.ts';
 import { Problem } from '../problem/problem.ts';
 
@@ -20,6 +21,16 @@ export function solveOrdered(
   name: string,
   store: CellStore,
 ): SolvedShape | Problem {
+  return finished(orderedSteps(shape, accuracy, name, store));
+}
+
+/** The same, step by step. */
+export function* orderedSteps(
+  shape: CellShape,
+  accuracy: Accuracy,
+  name: string,
+  store: CellStore,
+): Steps<SolvedShape | Problem> {
   let found: SolvedShape | null = null;
   const noting: CellStore = {
     get(key) {
@@ -39,7 +50,7 @@ export function solveOrdered(
     'Change the drawing there a little.',
   );
   try {
-    solveCell(shape, accuracy, noting, name);
+    yield* cellSteps(shape, accuracy, noting, name);
     return found ?? stopped;
   } catch (error) {
     return error instanceof Problem ? error : stopped;

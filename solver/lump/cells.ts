@@ -55,6 +55,30 @@ export function knownSolution(spec: CellSpec, memory: CellMemory): CellSolution 
   return known && !(known.found instanceof Problem) ? known.found : null;
 }
 
+/** Cells that memory holds no such accurate solution of, shapes met several times once. */
+export function lackingCells(
+  specs: readonly CellSpec[],
+  accuracy: Accuracy,
+  memory: CellMemory,
+): readonly CellSpec[] {
+  const seen = new Set<string>();
+  return specs.filter(({ shape, name }) => {
+    const known = memory.known.get(textOf(shape));
+    if (known && (known.found instanceof Problem || asAccurate(known.asked, accuracy))) return false;
+    try {
+      const key = cellKey(shape, name);
+      if (seen.has(key)) return false;
+      seen.add(key);
+      const kept = memory.store.get(key);
+      return !kept || !serves(kept, accuracy);
+    } catch (error) {
+      // it has no solution: the solve says why
+      if (error instanceof Problem) return false;
+      throw error;
+    }
+  });
+}
+
 /** Solves one waiting cell into memory. */
 export function solveWaiting(spec: CellSpec, accuracy: Accuracy, memory: CellMemory): void {
   solutionOf(spec, accuracy, false, memory);
@@ -79,9 +103,7 @@ function solutionOf(
 ): CellSolution | Problem | null {
   const text = textOf(spec.shape);
   const known = memory.known.get(text);
-  if (known && known.asked.flow <= accuracy.flow && (known.asked.peak ?? 1) <= (accuracy.peak ?? 1)) {
-    return known.found;
-  }
+  if (known && asAccurate(known.asked, accuracy)) return known.found;
   let found: CellSolution | Problem;
   try {
     if (haste) {
@@ -96,6 +118,9 @@ function solutionOf(
   memory.known.set(text, { asked: accuracy, found });
   return found;
 }
+
+const asAccurate = (known: Accuracy, asked: Accuracy): boolean =>
+  known.flow <= asked.flow && (known.peak ?? 1) <= (asked.peak ?? 1);
 
 const texts = new WeakMap<CellShape, string>();
 
