@@ -1,12 +1,13 @@
 import { useMemo } from 'react';
 import type { Channel, Chip } from '../../solver/chip/chip.ts';
-import type { ChannelResult } from '../../solver/chip/result.ts';
+import type { ChannelResult, Result } from '../../solver/chip/result.ts';
 import { pathLength } from '../geometry/path.ts';
 import { usePage } from '../page/context.tsx';
 import { shown } from '../sheet/overlay.ts';
 import { useAnswer } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { placeName } from '../verdict/answer.ts';
+import { bandOf, plusMinus } from '../words/band.ts';
 import { figure, lengthFigure } from '../words/figure.ts';
 import { lengthened } from './lengthen.ts';
 import { MakerCard } from './maker-card.tsx';
@@ -37,11 +38,12 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
       <h2>{channel.id}</h2>
       <p className="soft">
         {between(solved)}layer {channel.layer}
-        {layer && `, ${lengthFigure(layer.depth, { digits: 3 })} deep`}
+        {layer && `, ${lengthFigure(channel.depth ?? layer.depth, { digits: 3 })} deep`}
+        {channel.depth !== undefined && ', a depth of its own'}
       </p>
       {layer && (
         <SectionPicture
-          layer={layer}
+          layer={channel.depth === undefined ? layer : { ...layer, depth: channel.depth }}
           width={Math.min(...channel.width)}
           flow={widest?.flow ?? null}
           viscosity={result?.fluid.viscosity ?? null}
@@ -115,7 +117,7 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
         <PlacesField part={{ kind: 'channel', value: channel }} />
       </div>
       <dl className="fields">
-        <Results solved={solved} chip={chip} />
+        <Results solved={solved} chip={chip} result={result} />
       </dl>
       <TargetFields of={{ channel: channel.id }} />
       <MakerCard id={channel.id} />
@@ -131,7 +133,15 @@ function between(solved: ChannelResult | undefined): string {
   return `from ${placeName(first.from)} to ${placeName(last.to)} · `;
 }
 
-function Results({ solved, chip }: { readonly solved: ChannelResult | undefined; readonly chip: Chip }) {
+function Results({
+  solved,
+  chip,
+  result,
+}: {
+  readonly solved: ChannelResult | undefined;
+  readonly chip: Chip;
+  readonly result: Result | null;
+}) {
   if (!solved || solved.pieces.length === 0)
     return <p className="soft">Its flow comes with the first answer.</p>;
   const { pieces } = solved;
@@ -146,11 +156,11 @@ function Results({ solved, chip }: { readonly solved: ChannelResult | undefined;
   };
   const flows = new Set(pieces.map((piece) => (piece.flow === null ? null : piece.flow.toPrecision(6))));
   const first = pieces[0]!;
-  const error = Math.max(...pieces.map((piece) => piece.accuracy ?? 0));
   const limit = Math.min(
     ...chip.limits.map((found) => ('shear' in found && !found.where ? found.shear : Infinity)),
   );
   const shear = most((piece) => piece.peakWallShear);
+  const hardest = pieces.find((piece) => piece.peakWallShear === shear);
   return (
     <>
       <Figure
@@ -163,7 +173,7 @@ function Results({ solved, chip }: { readonly solved: ChannelResult | undefined;
       />
       <Figure
         label={flows.size > 1 ? 'Flow, first piece' : 'Flow'}
-        figure={`${figure(first.flow, 'flow')}${error > 1e-4 ? ` ± ${figure(error, 'share', { digits: 1, unit: '%' })}` : ''}`}
+        figure={`${figure(first.flow, 'flow')}${first.flow === null ? '' : plusMinus(bandOf(result, 'flow', first))}`}
       />
       <Figure
         label="Pressure drop"
@@ -182,7 +192,7 @@ function Results({ solved, chip }: { readonly solved: ChannelResult | undefined;
       />
       <Figure
         label="Peak wall shear"
-        figure={figure(shear, 'stress', { digits: 3 })}
+        figure={`${figure(shear, 'stress', { digits: 3 })}${shear === null ? '' : plusMinus(bandOf(result, 'shear', hardest))}`}
         missed={shear !== null && shear > limit}
       />
       <Figure

@@ -1,6 +1,7 @@
 import { usePage } from '../page/context.tsx';
 import { useAnswer } from '../state/live.ts';
 import { placeName } from '../verdict/answer.ts';
+import { bandOf, plusMinus } from '../words/band.ts';
 import { capital, counted, figure, lengthFigure } from '../words/figure.ts';
 import { PlaceFindings } from './place-findings.tsx';
 import { Figure } from './text-field.tsx';
@@ -17,7 +18,8 @@ export function SiteCard({ name }: { readonly name: string }) {
     channel.pieces.flatMap((piece) => {
       const into = piece.to === name;
       if (!into && piece.from !== name) return [];
-      return [{ channel: channel.id, flow: piece.flow === null ? null : into ? piece.flow : -piece.flow }];
+      const flow = piece.flow === null ? null : into ? piece.flow : -piece.flow;
+      return [{ channel: channel.id, flow, band: bandOf(result, 'flow', piece) }];
     }),
   );
   return (
@@ -32,12 +34,12 @@ export function SiteCard({ name }: { readonly name: string }) {
           <Figure
             key={`${arm.channel} ${i.toString()}`}
             label={`${arm.channel}${arm.flow === null ? '' : arm.flow >= 0 ? ', in' : ', out'}`}
-            figure={figure(arm.flow === null ? null : Math.abs(arm.flow), 'flow')}
+            figure={`${figure(arm.flow === null ? null : Math.abs(arm.flow), 'flow')}${arm.flow === null ? '' : plusMinus(arm.band)}`}
           />
         ))}
         {cell && (
           <>
-            <Figure label="Peak wall shear" figure={figure(cell.peakWallShear, 'stress', { digits: 3 })} />
+            <Figure label="Peak wall shear" figure={`${figure(cell.peakWallShear, 'stress', { digits: 3 })}${cell.peakWallShear === null ? '' : plusMinus(bandOf(result, 'shear', cell))}`} />
             <Figure label="Accuracy" figure={figure(cell.accuracy, 'share', { digits: 2, unit: '%' })} />
           </>
         )}

@@ -6,6 +6,7 @@ import { driveText } from '../sheet/words.ts';
 import type { Tab } from '../state/view.ts';
 import { placeName, placeRef } from '../verdict/answer.ts';
 import { limitKind } from '../verdict/cells.ts';
+import { bandOf } from '../words/band.ts';
 import { capital, figure } from '../words/figure.ts';
 import type { Cell, Column, Row, Table } from './table.ts';
 
@@ -62,6 +63,7 @@ function ports(chip: Chip, result: Result | null): Table {
     { id: 'got', head: 'got', ...wish },
     { id: 'off', head: 'off', kind: 'share', unit: '%', signed: true },
     { id: 'share', head: 'share', kind: 'share', unit: '%' },
+    { id: 'share band', head: '± share', kind: 'share', unit: '%', digits: 2 },
     { id: 'flow', head: 'flow in', kind: 'flow', signed: false },
     { id: 'pressure', head: 'pressure', kind: 'pressure' },
     { id: 'hole', head: 'hole', kind: 'length', unit: 'um', edits: 'hole' },
@@ -88,6 +90,7 @@ function ports(chip: Chip, result: Result | null): Table {
         asked == null ? null : (gets?.got ?? null),
         off,
         there?.share ?? null,
+        there?.share == null ? null : bandOf(result, 'share', there) || null,
         there?.flow ?? null,
         there?.pressure ?? null,
         port.diameter / 1e9,
@@ -116,9 +119,11 @@ function channels(chip: Chip, result: Result | null): Table {
     { id: 'length', head: 'length', kind: 'length', unit: 'mm' },
     { id: 'flow', head: 'flow', kind: 'flow' },
     { id: 'share', head: 'share', kind: 'share', unit: '%' },
+    { id: 'share band', head: '± share', kind: 'share', unit: '%', digits: 2 },
     { id: 'drop', head: 'drop', kind: 'pressure' },
     { id: 'speed', head: 'speed', kind: 'velocity' },
     { id: 'shear', head: 'peak shear', kind: 'stress' },
+    { id: 'shear band', head: '± shear', kind: 'share', unit: '%', digits: 2 },
     { id: 'reynolds', head: 'Re', kind: 'number', digits: 2 },
     { id: 'time', head: 'time', kind: 'time', unit: 's' },
     ...(result?.making
@@ -141,12 +146,17 @@ function channels(chip: Chip, result: Result | null): Table {
     let time: number | null = pieces.length > 0 ? 0 : null;
     // Of the piece with the highest shear.
     let making: number | null = null;
+    let [shareBand, shearBand]: (number | null)[] = [null, null];
     for (const piece of pieces) {
-      if (piece.flow !== null && Math.abs(piece.flow) > Math.abs(flow ?? 0)) flow = piece.flow;
+      if (piece.flow !== null && Math.abs(piece.flow) > Math.abs(flow ?? 0)) {
+        flow = piece.flow;
+        shareBand = bandOf(result, 'share', piece);
+      }
       flow ??= piece.flow;
       drop = drop === null ? null : drop + piece.pressureDrop;
       speed = larger(speed, piece.meanVelocity);
       if (piece.making && (piece.peakWallShear ?? 0) > (shear ?? 0)) making = piece.making.shear.likely;
+      if ((piece.peakWallShear ?? 0) > (shear ?? 0)) shearBand = bandOf(result, 'shear', piece);
       shear = larger(shear, piece.peakWallShear);
       reynolds = larger(reynolds, piece.reynolds);
       time = time === null || piece.residenceTime === null ? null : time + piece.residenceTime;
@@ -161,14 +171,16 @@ function channels(chip: Chip, result: Result | null): Table {
         pathLength(channel.path, channel.bendRadius) / 1e9,
         flow,
         flow === null || total === 0 ? null : Math.abs(flow) / total,
+        shareBand || null,
         drop,
         speed,
         shear,
+        shearBand || null,
         reynolds,
         time,
         ...(result?.making ? [making] : []),
       ],
-      ...(shear !== null && shear > limit && { missed: [8] }),
+      ...(shear !== null && shear > limit && { missed: [9] }),
     };
   });
   return { columns, rows };
@@ -182,10 +194,14 @@ function routes(result: Result | null): Table {
     { id: 'from', head: 'from' },
     { id: 'to', head: 'to' },
     { id: 'share', head: 'share', kind: 'share', unit: '%' },
+    { id: 'share band', head: '± share', kind: 'share', unit: '%', digits: 2 },
     { id: 'time', head: 'time', kind: 'time', unit: 's' },
+    { id: 'time band', head: '± time', kind: 'share', unit: '%', digits: 2 },
     { id: 'shear', head: 'peak shear', kind: 'stress' },
+    { id: 'shear band', head: '± shear', kind: 'share', unit: '%', digits: 2 },
     { id: 'hug time', head: 'time at the wall', kind: 'time', unit: 's' },
     { id: 'hug shear', head: 'shear at the wall', kind: 'stress' },
+    { id: 'hug band', head: '± at the wall', kind: 'share', unit: '%', digits: 2 },
   ];
   const rows = (result?.routes ?? []).map(
     (route): Row => ({
@@ -194,10 +210,14 @@ function routes(result: Result | null): Table {
         route.from,
         route.to,
         route.share,
+        route.band?.share || null,
         route.residenceTime,
+        route.residenceTime === null ? null : route.band?.time || null,
         route.peakWallShear,
+        route.peakWallShear === null ? null : route.band?.shear || null,
         route.wallHugging?.residenceTime ?? null,
         route.wallHugging?.peakShear ?? null,
+        route.wallHugging ? route.band?.wall || null : null,
       ],
     }),
   );
@@ -213,6 +233,7 @@ function junctions(result: Result | null, graph: Graph | null): Table {
     { id: 'y', head: 'up', kind: 'length', unit: 'mm' },
     { id: 'solved', head: 'taken as' },
     { id: 'shear', head: 'peak shear', kind: 'stress' },
+    { id: 'shear band', head: '± shear', kind: 'share', unit: '%', digits: 2 },
     { id: 'accuracy', head: 'accuracy', kind: 'share', unit: '%' },
   ];
   const cells = new Map(result?.cells.map((cell) => [cell.id, cell]));
@@ -230,6 +251,7 @@ function junctions(result: Result | null, graph: Graph | null): Table {
           site.at[1] / 1e9,
           cell ? 'solved' : 'ideal',
           cell?.peakWallShear ?? null,
+          cell?.peakWallShear == null ? null : bandOf(result, 'shear', cell) || null,
           cell?.accuracy ?? null,
         ],
       };

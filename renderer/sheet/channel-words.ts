@@ -1,7 +1,8 @@
 import { FIGURE_FACE, type Palette, SIZES } from '../look/tokens.ts';
+import { plusMinus } from '../words/band.ts';
 import { figure } from '../words/figure.ts';
 import { type Camera, inView, type Size, toScreen } from './camera.ts';
-import { type Shown, valueOn } from './overlay.ts';
+import { type Shown, spanOn } from './overlay.ts';
 import type { Room } from './room.ts';
 import type { Scene } from './scene.ts';
 import type { Spatial } from './spatial.ts';
@@ -31,8 +32,8 @@ export function drawChannelWords(
   for (const index of near) {
     for (let i = scene.first[index]!; i < scene.first[index + 1]! && written < MOST; i += 1) {
       const stretch = scene.stretches[i]!;
-      const value = valueOn(shown, stretch.channel.id, stretch.start, stretch.stop);
-      if (value === null) continue;
+      const span = spanOn(shown, stretch.channel.id, stretch.start, stretch.stop);
+      if (span?.value == null) continue;
       let best = 0;
       let at = 0;
       for (let s = 0; s + 1 < stretch.path.length; s += 1) {
@@ -51,10 +52,11 @@ export function drawChannelWords(
       const x = (a[0] + b[0]) / 2;
       const half = (Math.max(...stretch.width) / 2) * camera.scale;
       const y = (a[1] + b[1]) / 2 - half - 9;
-      const text = figure(value, shown.kind, {
+      const told = figure(span.value, shown.kind, {
         digits: 3,
         ...(shown.kind === 'share' && { unit: '%', signed: shown.overlay === 'off target' }),
       });
+      const text = `${told}${plusMinus(span.band)}`;
       const wide = ctx.measureText(text).width;
       if (Math.abs(b[1] - a[1]) > Math.abs(b[0] - a[0]) * 0.2 || x < 0 || x > size.width || y < 0) continue;
       if (!room.take(x - wide / 2 - 3, y - 7, wide + 6, 14)) continue;

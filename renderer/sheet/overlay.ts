@@ -1,6 +1,7 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { PieceResult, Result } from '../../solver/chip/result.ts';
 import { type Kind, metres } from '../../solver/chip/units.ts';
+import { bandOf } from '../words/band.ts';
 
 /** What the colour of the fluid shows. */
 export const OVERLAYS = [
@@ -20,6 +21,8 @@ export interface Span {
   readonly start: number;
   readonly stop: number;
   readonly value: number | null;
+  /** How far the value may be off, relative to it, where that is known. */
+  readonly band?: number | null;
 }
 
 export interface Shown {
@@ -128,8 +131,9 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
   } else if (result && overlay === 'off target') {
     for (const target of result.targets) {
       const off = target.got === null ? null : target.got / target.wanted - 1;
-      if (target.channel !== undefined) values.set(target.channel, whole(off));
-      else for (const id of channelsAt(chip, target.port!)) values.set(id, whole(off));
+      const spans = whole(off, off === null ? null : target.band);
+      if (target.channel !== undefined) values.set(target.channel, spans);
+      else for (const id of channelsAt(chip, target.port!)) values.set(id, spans);
     }
   } else if (result) {
     const total = result.ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0);
@@ -141,6 +145,10 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
           start: (piece.along?.[0] ?? 0) * 1e9,
           stop: (piece.along?.[1] ?? piece.length) * 1e9,
           value: pieceValue(overlay, piece, total, pressures),
+          band:
+            overlay === 'share' || overlay === 'wall shear'
+              ? bandOf(result, overlay === 'share' ? 'share' : 'shear', piece)
+              : null,
         })),
       );
   }
@@ -160,7 +168,9 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
   };
 }
 
-const whole = (value: number | null): Span[] => [{ start: 0, stop: Number.POSITIVE_INFINITY, value }];
+const whole = (value: number | null, band: number | null = null): Span[] => [
+  { start: 0, stop: Number.POSITIVE_INFINITY, value, band },
+];
 
 function junctionPeaks(result: Result | null): Shown['places'] {
   return (result?.cells ?? []).flatMap(({ peakWallShear, peakAt }) =>
@@ -171,7 +181,11 @@ function junctionPeaks(result: Result | null): Shown['places'] {
 }
 
 /** The value that holds for most of a stretch of a channel; where it has none, that of the nearest piece. */
-export function valueOn(shown: Shown, id: string, start: number, stop: number): number | null {
+export const valueOn = (shown: Shown, id: string, start: number, stop: number): number | null =>
+  spanOn(shown, id, start, stop)?.value ?? null;
+
+/** The same with its band. */
+export function spanOn(shown: Shown, id: string, start: number, stop: number): Span | null {
   let best: Span | null = null;
   let most = Number.NEGATIVE_INFINITY;
   for (const span of shown.values.get(id) ?? []) {
@@ -182,7 +196,7 @@ export function valueOn(shown: Shown, id: string, start: number, stop: number): 
       best = span;
     }
   }
-  return best?.value ?? null;
+  return best;
 }
 
 /** The lowest stress that holds for the whole chip. */

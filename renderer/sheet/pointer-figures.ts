@@ -5,6 +5,7 @@ import { pathLength } from '../geometry/path.ts';
 import { type Answer, partId } from '../state/live.ts';
 import type { PartValue, ReadoutLine } from '../tools/tool.ts';
 import { placeName } from '../verdict/answer.ts';
+import { bandOf, plusMinus } from '../words/band.ts';
 import { figure } from '../words/figure.ts';
 
 /** A flow that tells how much shear a width costs, where nothing flows yet: 1 µL/min. */
@@ -35,9 +36,12 @@ export function pointerFigures(chip: Chip, parts: readonly PartValue[], answer: 
     const total = answer.result!.ports.reduce((sum, port) => sum + Math.max(0, port.flow ?? 0), 0);
     out.push({
       name: 'flow',
-      figure: `${figure(Math.abs(flow), 'flow', { digits: 3 })}${total > 0 ? `, ${figure(Math.abs(flow) / total, 'share', { digits: 3, unit: '%' })}` : ''}`,
+      figure: `${figure(Math.abs(flow), 'flow', { digits: 3 })}${total > 0 ? `, ${figure(Math.abs(flow) / total, 'share', { digits: 3, unit: '%' })}${plusMinus(bandOf(answer.result, 'share', last))}` : ''}`,
     });
-    out.push({ name: 'wall shear', figure: figure(last.peakWallShear, 'stress', { digits: 3 }) });
+    out.push({
+      name: 'wall shear',
+      figure: `${figure(last.peakWallShear, 'stress', { digits: 3 })}${plusMinus(bandOf(answer.result, 'shear', last))}`,
+    });
   } else if (duct?.shear != null) {
     out.push({
       name: `shear at ${figure(TELLING_FLOW, 'flow', { digits: 1, unit: 'uL/min' })}`,

@@ -2,6 +2,7 @@ import type { Chip, Drive, Port } from '../../solver/chip/chip.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { Kind } from '../../solver/chip/units.ts';
 import type { Xy } from '../geometry/vector.ts';
+import { bandOf, plusMinus } from '../words/band.ts';
 import { capital, counted, figure, typed, unitFor } from '../words/figure.ts';
 
 /** What stands beside a port: its name and its most telling figure. */
@@ -45,7 +46,7 @@ export function portWords(chip: Chip, result: Result | null): readonly PortWords
           : port.drive.kind === 'flow'
             ? driveText(port.drive)
             : (solved.flow ?? 0) < 0
-              ? figure(solved.share, 'share', { digits: 3, unit: '%' })
+              ? `${figure(solved.share, 'share', { digits: 3, unit: '%' })}${plusMinus(bandOf(result, 'share', solved))}`
               : driveText(port.drive);
     return { port, name: port.id, figure: telling, side: sideOf(towards[i]!), missed: missed.has(port.id) };
   });
@@ -104,7 +105,7 @@ export function placeWords(
     if (at)
       out.push({
         at,
-        head: `${figure(judged.worst, kind, { digits: 3 })} here`,
+        head: `${figure(judged.worst, kind, { digits: 3 })}${plusMinus(judged.band)} here`,
         more: `limit ${figure(judged.limit, kind, { digits: 3 })} · ${judged.name}`,
         alarm: true,
         where: judged.where,

@@ -1,6 +1,7 @@
 import type { Limit } from '../../solver/chip/chip.ts';
 import type { LimitResult, Result } from '../../solver/chip/result.ts';
 import type { Kind } from '../../solver/chip/units.ts';
+import { plusMinus, shearBandAt } from '../words/band.ts';
 import { counted, figure } from '../words/figure.ts';
 import { type Answer, type Evidence, type Margin, placeName, placeRef, strong, unsolved } from './answer.ts';
 
@@ -52,7 +53,7 @@ export function cellsAnswer(evidence: Evidence): Answer {
       says: [
         'No: ',
         strong(figure(judged!.worst, kind, { digits: 3 })),
-        ` in ${placeName(where)}; ${limit.name}: ${'floor' in limit ? 'at least' : 'at most'} ${figure(bound, kind, { digits: 3 })}`,
+        `${plusMinus(judged!.band)} in ${placeName(where)}; ${limit.name}: ${'floor' in limit ? 'at least' : 'at most'} ${figure(bound, kind, { digits: 3 })}`,
         others > 0 ? `, and ${counted(others, 'more limit', 'more limits')} missed.` : '.',
       ],
       margin,
@@ -73,7 +74,7 @@ export function cellsAnswer(evidence: Evidence): Answer {
     says: [
       `Yes: ${'floor' in limit ? 'at least' : 'at most'} `,
       strong(figure(judged!.worst, kind, { digits: 3 })),
-      ` in ${placeName(where)}; ${limit.name} ${'floor' in limit ? 'need' : 'bear'} ${figure(bound, kind, { digits: 3 })}.`,
+      `${plusMinus(judged!.band)} in ${placeName(where)}; ${limit.name} ${'floor' in limit ? 'need' : 'bear'} ${figure(bound, kind, { digits: 3 })}.`,
     ],
     margin,
     culprit,
@@ -89,7 +90,7 @@ function noLimit(result: Result, { chip }: Evidence): Answer {
       ? [
           'No limit is given; the highest wall shear is ',
           strong(figure(peak.shear, 'stress', { digits: 3 })),
-          `, in ${placeName(peak.where)}.`,
+          `${plusMinus(shearBandAt(result, peak.where))}, in ${placeName(peak.where)}.`,
         ]
       : ['No limit is given.'],
     margin: null,

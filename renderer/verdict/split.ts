@@ -1,5 +1,6 @@
 import type { TargetResult } from '../../solver/chip/result.ts';
 import type { Ref } from '../state/ref.ts';
+import { plusMinus } from '../words/band.ts';
 import { count, counted, figure } from '../words/figure.ts';
 import { type Answer, type Evidence, type Margin, placeName, type Run, strong, unsolved } from './answer.ts';
 
@@ -48,7 +49,7 @@ export function splitAnswer(evidence: Evidence): Answer {
     return answer('no', worst, [
       `No: ${nameOf(worst)} is `,
       strong(percent(offOf(worst), true)),
-      ` off, ${percent(within(worst))} is allowed${tail}`,
+      ` off${plusMinus(worst.band)}, ${percent(within(worst))} is allowed${tail}`,
     ]);
   }
   const lost = targets.find((target) => target.got === null);
@@ -64,17 +65,21 @@ export function splitAnswer(evidence: Evidence): Answer {
     return answer('yes', made, [
       targets.length === 1 ? `Yes: ${nameOf(worst)} is within ` : `${all} ${noun(targets)} within `,
       off,
-      '; making adds ± ',
+      `${plusMinus(worst.band)}; making adds ± `,
       strong(percent(made.making!.likely)),
       reach(made) > within(made) ? `, ${percent(within(made))} is allowed.` : '.',
     ]);
   if (targets.length === 1)
-    return answer('yes', worst, [`Yes: ${nameOf(worst)} is within `, off, ' of its target.']);
+    return answer('yes', worst, [
+      `Yes: ${nameOf(worst)} is within `,
+      off,
+      `${plusMinus(worst.band)} of its target.`,
+    ]);
   const wish = chip.targets.every((target) => 'share' in target) ? 'share' : 'target';
   return answer('yes', worst, [
     `${all} ${noun(targets)} within `,
     off,
-    ` of their ${wish}; the worst is ${nameOf(worst)}.`,
+    `${plusMinus(worst.band)} of their ${wish}; the worst is ${nameOf(worst)}.`,
   ]);
 }
 

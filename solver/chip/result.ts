@@ -152,6 +152,16 @@ export interface RouteResult {
   readonly to: string;
   /** Of the total that enters the chip. */
   readonly share: number;
+  /**
+   * Relative errors, as `Bands`: of its share, of its times, of its peak wall shear, and of what a cell along the
+   * wall meets, where paths through junctions were followed in a pattern of flow rounded by a few per cent.
+   */
+  readonly band?: {
+    readonly share: number;
+    readonly time: number;
+    readonly shear: number;
+    readonly wall: number;
+  };
   /** Mean over the flow. */
   readonly residenceTime: number | null;
   /** What the fastest hundredth of the flow stays below, and the slowest above, s. */
@@ -173,6 +183,8 @@ export interface RouteResult {
     readonly limit: string;
     readonly mean: number | null;
     readonly wallHugging: number | null;
+    /** Relative error of both, by those of stress and time; the law’s own is another matter. */
+    readonly band?: number;
   }[];
 }
 
@@ -230,12 +242,16 @@ export interface TargetResult {
   readonly met: boolean;
   /** Of `got`. */
   readonly making?: Making;
+  /** Relative error of `got`, as `Bands`. */
+  readonly band?: number;
 }
 
 export interface LimitResult {
   readonly name: string;
   readonly limit: number | null;
   readonly worst: number | null;
+  /** Relative error of `worst`, as `Bands`; of stresses, and of damage by a law. */
+  readonly band?: number;
   readonly where: string;
   /** null where it could not be judged; a finding says why. */
   readonly met: boolean | null;

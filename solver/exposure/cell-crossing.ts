@@ -130,12 +130,20 @@ export class CellPaths {
   /** Pa and s that the solved copy's units stand for. */
   readonly #stress: number;
   readonly #time: number;
+  readonly #rounding: number;
 
-  private constructor(cell: FlowingCell, through: number, pattern: Pattern, volume: number) {
+  private constructor(
+    cell: FlowingCell,
+    through: number,
+    pattern: Pattern,
+    volume: number,
+    rounding: number,
+  ) {
     const [placement] = cell.solution.placements;
     this.#cell = cell;
     this.#pattern = pattern;
     this.#volume = volume;
+    this.#rounding = rounding;
     this.#placement = placement;
     this.#stress = (cell.viscosity * through) / placement.scale ** 3;
     this.#time = placement.scale ** 3 / through;
@@ -150,7 +158,8 @@ export class CellPaths {
     let through = 0;
     for (let i = 0; i < flow.length; i += 1) through += Math.max(0, flow[i]);
     const { fields } = solution;
-    return new CellPaths(cell, through, patternOf(solution, fields, pattern), shapeOf(fields).volume);
+    const found = patternOf(solution, fields, pattern);
+    return new CellPaths(cell, through, found, shapeOf(fields).volume, pattern.rounding);
   }
 
   /** Pa s */
@@ -185,6 +194,7 @@ export class CellPaths {
       fast: time / fast,
       slow: time / slow,
       peakWallShear,
+      rounding: this.#rounding,
       get stretch() {
         return stretch();
       },

@@ -9,6 +9,8 @@ export interface CellPattern {
   readonly key: string;
   /** Flow into the cell at each face, those in and those out adding up to 1. */
   readonly flow: Float64Array;
+  /** By how much the arm that differs most from its true flow does, relative to it. */
+  readonly rounding: number;
 }
 
 /** Steps in a factor of two: neighbours differ by 4.4 %, so that rounding is at most 2.2 %. */
@@ -37,6 +39,11 @@ export function cellPattern(flow: ArrayLike<number>): CellPattern | null {
     key.push(`${flow[i] > 0 ? 'i' : 'o'}${step}`);
   }
   if (sum[0] === 0 || sum[1] === 0) return null;
-  for (let i = 0; i < n; i += 1) rounded[i] /= sum[rounded[i] > 0 ? 0 : 1];
-  return { key: key.join(' '), flow: rounded };
+  let rounding = 0;
+  for (let i = 0; i < n; i += 1) {
+    if (rounded[i] === 0) continue;
+    rounded[i] /= sum[rounded[i] > 0 ? 0 : 1];
+    rounding = Math.max(rounding, Math.abs((rounded[i] * into) / flow[i] - 1));
+  }
+  return { key: key.join(' '), flow: rounded, rounding };
 }

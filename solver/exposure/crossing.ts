@@ -14,6 +14,8 @@ export interface Crossing {
   readonly peakWallShear: number | null;
   /** Where fluid is pulled apart fastest; null in a duct, where it only shears. */
   readonly stretch: Stretch | null;
+  /** Relative: how far the flow that paths inside were followed in may be from the true one; 0 where absent. */
+  readonly rounding?: number;
   /** Of the mean path, Pa^γ s: ∫ stress^γ dV / Q. */
   dose(exponent: number): number;
   history(): History;

@@ -14,6 +14,8 @@ export interface ErrorBands {
   readonly ports: readonly (NonNullable<PortResult['band']> | null)[];
   readonly pieces: readonly (NonNullable<PieceResult['band']> | null)[];
   readonly cells: readonly (NonNullable<CellResult['band']> | null)[];
+  /** Relative error of the resistance of every duct. */
+  readonly ducts: Float64Array;
 }
 
 export interface Solved extends Parts {
@@ -117,6 +119,7 @@ export function bandsOf(
     ports: offered,
     pieces: ofPieces,
     cells: cellBands(cells, lumped, ofPieces),
+    ducts,
     chip: {
       share: Math.max(0, ...weighty.map((port) => own[port]!.share)),
       flow: flowBand,

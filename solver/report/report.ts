@@ -27,6 +27,7 @@ import { lawPieceResult, pieceResult } from './pieces.ts';
 import { pumpResults } from './pumps.ts';
 import { stillDucts } from './still.ts';
 import { targetResults } from './targets.ts';
+import { withBands } from './told-bands.ts';
 
 /**
  * The solved network in the chip's own terms.
@@ -80,6 +81,14 @@ export function report(
     cells: cellEvidence(lumped),
     asked,
   });
+  const told = {
+    ports,
+    channels,
+    cells: chip.limits.length > 0 ? withStrain(cells, net, lumped, flow) : cells,
+    routes: exposure.results,
+    targets,
+    limits: limits.results,
+  };
   return {
     format: 'channelwright-result',
     version: 1,
@@ -87,15 +96,7 @@ export function report(
     status: 'solved',
     junctions,
     fluid: { viscosity: fluid.viscosity, density: fluid.density },
-    ports: bands ? withBands(ports, bands.ports) : ports,
-    channels: bands ? byChannel(chip, graph, lumped, withBands(pieces, bands.pieces)) : channels,
-    cells: withBands(
-      chip.limits.length > 0 ? withStrain(cells, net, lumped, flow) : cells,
-      bands?.cells ?? [],
-    ),
-    routes: exposure.results,
-    targets,
-    limits: limits.results,
+    ...(bands ? withBands(chip, told, lumped.names, net, bands) : told),
     pumps: pumps.pumps,
     ...(drift ? { drift: drift.drift } : {}),
     balance: {
@@ -125,13 +126,6 @@ export function report(
     ),
   };
 }
-
-/** What was found with how far it may be off, where that is known. */
-const withBands = <T extends object, B>(found: readonly T[], bands: readonly (B | null)[]): T[] =>
-  found.map((one, index) => {
-    const band = bands[index];
-    return band ? { ...one, band } : one;
-  });
 
 /** Flow of every duct: 0 where it is joined so that nothing can flow, null where too small for its digits. */
 function ductFlows(

@@ -1,0 +1,145 @@
+import type { Chip, Limit } from '../chip/chip.ts';
+import type {
+  LimitResult,
+  PieceResult,
+  PortResult,
+  Result,
+  RouteResult,
+  TargetResult,
+} from '../chip/result.ts';
+import type { ErrorBands } from './bands.ts';
+import type { ChipNet } from './flow-net.ts';
+
+type Told = Pick<Result, 'ports' | 'channels' | 'cells' | 'routes' | 'targets' | 'limits'>;
+
+/**
+ * Ports, pieces, cells, routes, targets and limits with how far each may be off, as `Bands`. Where a large chip's
+ * pieces have no band of their own, the worst of the chip stands for it.
+ */
+export function withBands(
+  chip: Chip,
+  told: Told,
+  names: readonly string[],
+  net: ChipNet,
+  bands: ErrorBands,
+): Told {
+  const pieces = new Map(names.map((name, e) => [name, { band: bands.pieces[e], duct: bands.ducts[e] }]));
+  const cells = new Map(told.cells.map(({ id }, i) => [id, bands.cells[i]]));
+  const ports = told.ports.map((port, i) => banded(port, bands.ports[i]));
+  const channels = told.channels.map(({ id, pieces: own }) => ({
+    id,
+    pieces: own.map((piece, i) => banded(piece, pieces.get(`${id}#${i + 1}`)?.band)),
+  }));
+  const shearAt = (where: string): number =>
+    pieces.get(where)?.band?.shear ?? cells.get(where)?.shear ?? bands.chip.shear;
+  const routes = routeBands(chip, told.routes, ports, {
+    flowIn: (name) => pieces.get(name)?.band?.flow ?? (cells.has(name) ? 0 : bands.chip.flow),
+    lengthOf: (name) => pieces.get(name)?.duct ?? 0,
+    shearAt,
+    rounding: roundingOf(net),
+  });
+  return {
+    ports,
+    channels,
+    cells: told.cells.map((cell, i) => banded(cell, bands.cells[i])),
+    routes,
+    targets: told.targets.map((target, i) =>
+      targetBand(target, 'share' in chip.targets[i], { ports, channels }),
+    ),
+    limits: told.limits.map((limit, i) => limitBand(limit, chip.limits[i], shearAt, routes)),
+  };
+}
+
+/** With a band, where there is one. */
+const banded = <T extends object, B>(one: T, band: B | null | undefined): T =>
+  band ? { ...one, band } : one;
+
+/** By how much the pattern of flow that paths were followed in differs from the flow, of each cell by name. */
+function roundingOf({ crossing, element }: ChipNet): Map<string, number> {
+  const found = new Map<string, number>();
+  crossing.forEach(({ rounding = 0 }, e) => {
+    if (rounding > (found.get(element[e].name) ?? 0)) found.set(element[e].name, rounding);
+  });
+  return found;
+}
+
+interface Known {
+  readonly flowIn: (name: string) => number;
+  /** Error of a piece's resistance, of which the doubt of its length is a part. */
+  readonly lengthOf: (name: string) => number;
+  readonly shearAt: (where: string) => number;
+  readonly rounding: ReadonlyMap<string, number>;
+}
+
+function routeBands(
+  chip: Chip,
+  routes: readonly RouteResult[],
+  ports: readonly PortResult[],
+  { flowIn, lengthOf, shearAt, rounding }: Known,
+): RouteResult[] {
+  const own = new Map(ports.map(({ id, band }) => [id, band]));
+  const [outs, ins] = [new Map<string, number>(), new Map<string, number>()];
+  for (const { from, to } of routes) {
+    outs.set(from, (outs.get(from) ?? 0) + 1);
+    ins.set(to, (ins.get(to) ?? 0) + 1);
+  }
+  const everywhere = Math.max(0, ...rounding.values());
+  const laws = new Map(
+    chip.limits.flatMap((limit) => ('law' in limit ? [[limit.name, limit.law] as const] : [])),
+  );
+  return routes.map((route): RouteResult => {
+    const [a, b] = [own.get(route.from), own.get(route.to)];
+    if (!a || !b) return route;
+    // Where an inlet feeds several outlets that others feed too, both of its ports divide it.
+    const mixed = outs.get(route.from)! > 1 && ins.get(route.to)! > 1;
+    const along = route.path?.map(({ name }) => name) ?? [];
+    const most = (of: (name: string) => number): number => Math.max(0, ...along.map(of));
+    const flow = Math.max(a.flow, b.flow, most(flowIn));
+    const time = flow + most(lengthOf);
+    const shear = shearAt(route.peakAt ?? '');
+    const round = along.length > 0 ? most((name) => rounding.get(name) ?? 0) : everywhere;
+    const wall = Math.max(time, shear) + round;
+    return {
+      ...route,
+      band: { share: mixed ? a.share + b.share : Math.max(a.share, b.share), time, shear, wall },
+      damage: route.damage.map((entry) => {
+        const law = laws.get(entry.limit);
+        return law ? { ...entry, band: law.stress * (shear + round) + law.time * time } : entry;
+      }),
+    };
+  });
+}
+
+/** Of a flow or share at a port, or in the piece of a channel that is off by most. */
+function targetBand(
+  target: TargetResult,
+  share: boolean,
+  { ports, channels }: Pick<Told, 'ports' | 'channels'>,
+): TargetResult {
+  const of = (band: NonNullable<PieceResult['band'] | PortResult['band']>): number =>
+    share ? band.share : band.flow;
+  if (target.got === null) return target;
+  const found =
+    target.port === undefined
+      ? channels
+          .find(({ id }) => id === target.channel)
+          ?.pieces.flatMap(({ band }) => (band ? [of(band)] : []))
+      : ports.flatMap(({ id, band }) => (id === target.port && band ? [of(band)] : []));
+  return found && found.length > 0 ? { ...target, band: Math.max(...found) } : target;
+}
+
+/** Of a wall shear, or of damage by a law; what a curve or a floor counts has none that could be told so simply. */
+function limitBand(
+  result: LimitResult,
+  limit: Limit,
+  shearAt: (where: string) => number,
+  routes: readonly RouteResult[],
+): LimitResult {
+  if (result.worst === null) return result;
+  if ('shear' in limit) return { ...result, band: shearAt(result.where) };
+  if (!('law' in limit) || !result.route) return result;
+  const [from, to] = result.route;
+  const route = routes.find((one) => one.from === from && one.to === to);
+  const band = route?.damage.find((entry) => entry.limit === limit.name)?.band;
+  return band === undefined ? result : { ...result, band };
+}
