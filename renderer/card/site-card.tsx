@@ -39,7 +39,10 @@ export function SiteCard({ name }: { readonly name: string }) {
         ))}
         {cell && (
           <>
-            <Figure label="Peak wall shear" figure={`${figure(cell.peakWallShear, 'stress', { digits: 3 })}${cell.peakWallShear === null ? '' : plusMinus(bandOf(result, 'shear', cell))}`} />
+            <Figure
+              label="Peak wall shear"
+              figure={`${figure(cell.peakWallShear, 'stress', { digits: 3 })}${cell.peakWallShear === null ? '' : plusMinus(bandOf(result, 'shear', cell))}`}
+            />
             <Figure label="Accuracy" figure={figure(cell.accuracy, 'share', { digits: 2, unit: '%' })} />
           </>
         )}
@@ -56,7 +59,7 @@ export function SiteCard({ name }: { readonly name: string }) {
 
 /**
  * Faces by the channels that they cut: "feed" of "feed#1"; where one channel is cut twice, "feed, before" and
- * "feed, behind", in the order of its pieces.
+ * "feed, after", in the order of its pieces.
  */
 function faceNames(faces: readonly string[]): readonly string[] {
   const names = faces.map(placeName);
@@ -65,7 +68,7 @@ function faceNames(faces: readonly string[]): readonly string[] {
     const alike = faces.filter((_, j) => names[j] === name);
     if (alike.length < 2) return name;
     const nth = [...alike].sort((a, b) => pieceOf(a) - pieceOf(b)).indexOf(face);
-    return alike.length === 2 ? `${name}, ${nth === 0 ? 'before' : 'behind'}` : `${name}, ${nth + 1}`;
+    return alike.length === 2 ? `${name}, ${nth === 0 ? 'before' : 'after'}` : `${name}, ${nth + 1}`;
   });
 }
 
