@@ -9,7 +9,10 @@ const SQUARES = 0.5;
 
 /** Channels without those that cover ground which was not drawn; that ground is left to chambers. */
 export function dropExcess(found: Found[], covered: Paths64, ground: Paths64): Found[] {
-  const over = Clipper.difference(covered, ground, FillRule.NonZero);
+  // A sliver of rounding that runs the wrong way round would turn all others into holes.
+  const over = Clipper.difference(covered, ground, FillRule.NonZero).filter(
+    (path) => Math.abs(Clipper.area(path)) > THIN * THIN,
+  );
   if (over.length === 0) return found;
   const thick = Clipper.inflatePaths(over, -THIN, JoinType.Miter, EndType.Polygon);
   if (thick.length === 0) return found;

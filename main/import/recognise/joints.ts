@@ -11,7 +11,7 @@ const OFFSET = 0.02;
 /** A centreline is led on at most this many widths to meet others. */
 const FURTHEST = 4;
 /** A knot larger than this many squares of the widest width is a chamber. */
-const LARGEST = 8;
+const LARGEST = 5.5;
 /** Share of its width by which a channel is led into a chamber. */
 const INTO = 0.5;
 
@@ -60,7 +60,7 @@ function joinKnot(knot: Knot, strips: readonly Strip[], places: readonly [EndPla
       of,
       end: strip.ends[of.end],
       place: places[of.strip][of.end],
-      even: axis !== null && (axis.kind === 'arc' || axis.slope === 0),
+      even: axis !== null && axis.slope === 0,
       straight: axis?.kind === 'line',
     };
   });
@@ -75,8 +75,12 @@ function joinKnot(knot: Knot, strips: readonly Strip[], places: readonly [EndPla
       return;
     }
     const room = Math.sqrt(knot.area) / 4;
-    if (knot.area > 1.2 * widest * widest)
-      for (const { end, place } of arms) place.into = Math.min(INTO * end.width, room);
+    if (!(knot.area > 1.2 * widest * widest)) return;
+    for (const arm of arms) {
+      const { x, y, ux, uy, width, aslant } = arm.end;
+      settle(arm, x + aslant * ux, y + aslant * uy);
+      arm.place.into = Math.min(INTO * width, room);
+    }
     return;
   }
   const left = new Set(arms);
@@ -223,8 +227,9 @@ function chained(strips: readonly Strip[], places: readonly [EndPlace, EndPlace]
   };
   strips.forEach((strip, s) => {
     if (strip.soft) softCourses(strip.soft, places[s], out);
-    else if (strip.axis?.kind === 'line' && strip.axis.slope !== 0) taperCourse(strip, places[s], out);
-    else return;
+    else if (!strip.axis || strip.axis.slope === 0) return;
+    else if (strip.axis.kind === 'line') taperCourse(strip, places[s], out);
+    else taperedBend(strip, places[s], out);
     used[s] = 1;
   });
   for (const open of [true, false]) {
@@ -275,6 +280,19 @@ function taperCourse({ axis, ends }: Strip, places: readonly [EndPlace, EndPlace
   if (path[0][0] === path[1][0] && path[0][1] === path[1][1]) return;
   out.courses.push({ path, width: [width[0], width[1]], bendRadius: 0 });
   out.into.push([places[0].into, places[1].into]);
+}
+
+/** A bend whose width changes along it, as channels that do so too. */
+function taperedBend(strip: Strip, places: readonly [EndPlace, EndPlace], out: Joined): void {
+  const [start, end] = strip.ends.map(({ width }) => width);
+  const courses = coursesOf(stepsOf(strip, places, 0), (start + end) / 2);
+  courses.forEach((course, k) => {
+    const width = [k, k + 1].map((i) =>
+      Math.max(1, Math.round(start + ((end - start) * i) / courses.length)),
+    );
+    out.courses.push({ ...course, width: [width[0], width[1]] });
+    out.into.push([k === 0 ? places[0].into : 0, k === courses.length - 1 ? places[1].into : 0]);
+  });
 }
 
 function softCourses(

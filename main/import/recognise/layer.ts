@@ -115,6 +115,10 @@ function alone(all: ReturnType<typeof stripsOf>): ReturnType<typeof stripsOf> {
   const rooms = new Set<number>();
   const widthOf = (s: number): number => Math.max(...strips[s].ends.map(({ width }) => width));
   const stub = (s: number): boolean => strips[s].length < STUB * widthOf(s);
+  const shortTaper = (s: number): boolean => {
+    const { axis, length } = strips[s];
+    return axis?.kind === 'line' && axis.slope !== 0 && length < SHORT_CORNER * widthOf(s);
+  };
   strips.forEach(({ ends, length, axis }, s) => {
     if (axis?.kind !== 'line') return;
     const width = widthOf(s);
@@ -126,10 +130,10 @@ function alone(all: ReturnType<typeof stripsOf>): ReturnType<typeof stripsOf> {
       stub(s) && sides.some(({ strip }) => !stub(strip)) ? sides.filter(({ strip }) => !stub(strip)) : sides;
     const narrow = sure.every(({ strip, end }) => strips[strip].ends[end].width <= NARROWER * width);
     if (narrow && length < (sides.length > 0 ? SHORT_ROOM : SHORT_ALONE) * width) rooms.add(s);
-    if (axis.slope === 0 || length >= SHORT_CORNER * width || others.some((list) => list.length === 0))
-      return;
+    if (axis.slope === 0 || length >= SHORT_CORNER * width || sides.length === 0) return;
     const goesOn = ends.some((mine, k) =>
       others[k].some(({ strip, end }) => {
+        if (shortTaper(strip)) return false;
         const { ux, uy } = strips[strip].ends[end];
         return mine.ux * ux + mine.uy * uy < 0 && Math.abs(mine.ux * uy - mine.uy * ux) < GOES_ON;
       }),

@@ -21,7 +21,9 @@ export type Axis =
       readonly x: number;
       readonly y: number;
       readonly radius: number;
+      /** Width at s = 0 and its growth per radian. */
       readonly width: number;
+      readonly slope: number;
     };
 
 export interface Pair {
@@ -29,14 +31,19 @@ export interface Pair {
   /** Where both walls are there. */
   readonly from: number;
   readonly to: number;
+  /** How much further the longer of two straight walls goes at either end, nm. */
+  readonly beyond: readonly [number, number];
 }
 
 /** Walls that open by more than this (radians) are no taper of a channel. */
 const WIDEST_TAPER = 0.9;
 /** Below this they are taken as parallel, and the longer wall says the direction. */
 const PARALLEL = 1e-3;
-/** Circles are one about the other where their centres lie this close, as a share of the gap. */
-const CONCENTRIC = 0.02;
+/** A bend's walls go round one another where their centres lie this close, as a share of the gap: a taper parts them a little. */
+const CONCENTRIC = 0.12;
+
+/** A corner that an outer wall turns about lies this close to its centre, as a share of the radius. */
+const ON_CORNER = 0.02;
 
 /** The axis between two walls, null where they do not face each other as those of a channel do. */
 export function pairOf(e: Wall, f: Wall): Pair | null {
@@ -59,14 +66,10 @@ function linePair(e: Wall, f: Wall): Pair | null {
   ux /= length;
   uy /= length;
   const along = (x: number, y: number): number => (x - e.x0) * ux + (y - e.y0) * uy;
-  const from = Math.max(
-    Math.min(along(e.x0, e.y0), along(e.x1, e.y1)),
-    Math.min(along(f.x0, f.y0), along(f.x1, f.y1)),
-  );
-  const to = Math.min(
-    Math.max(along(e.x0, e.y0), along(e.x1, e.y1)),
-    Math.max(along(f.x0, f.y0), along(f.x1, f.y1)),
-  );
+  const starts = [e, f].map((w) => Math.min(along(w.x0, w.y0), along(w.x1, w.y1)));
+  const ends = [e, f].map((w) => Math.max(along(w.x0, w.y0), along(w.x1, w.y1)));
+  const from = Math.max(...starts);
+  const to = Math.min(...ends);
   if (!(to > from)) return null;
   const offset = (w: Wall, s: number): number => {
     const [s0, s1] = [along(w.x0, w.y0), along(w.x1, w.y1)];
@@ -80,7 +83,7 @@ function linePair(e: Wall, f: Wall): Pair | null {
   const middle = (from + to) / 2;
   const off = (offset(e, middle) + offset(f, middle)) / 2;
   const slope = (w1 - w0) / (to - from);
-  const even = Math.abs(w1 - w0) <= 3 + 1e-3 * Math.max(w0, w1);
+  const even = isEven(w0, w1);
   return {
     axis: {
       kind: 'line',
@@ -93,8 +96,12 @@ function linePair(e: Wall, f: Wall): Pair | null {
     },
     from,
     to,
+    beyond: [from - Math.min(...starts), Math.max(...ends) - to],
   };
 }
+
+/** Whether a stretch with these widths at its ends counts as one of even width. */
+const isEven = (w0: number, w1: number): boolean => Math.abs(w1 - w0) <= 3 + 1e-3 * Math.max(w0, w1);
 
 function arcPair(outer: Wall, inner: Wall): Pair | null {
   const gap = outer.radius - inner.radius;
@@ -116,16 +123,23 @@ function arcPair(outer: Wall, inner: Wall): Pair | null {
   if (!(to > from)) return null;
   const [x, y] = [(outer.cx + inner.cx) / 2, (outer.cy + inner.cy) / 2];
   const radius = (outer.radius + inner.radius) / 2;
-  return { axis: { kind: 'arc', x, y, radius, width: gap }, from, to };
+  const wide = (s: number): number =>
+    gap + (outer.cx - inner.cx) * Math.cos(s) + (outer.cy - inner.cy) * Math.sin(s);
+  const [w0, w1] = [wide(from), wide(to)];
+  if (!(Math.min(w0, w1) > 0)) return null;
+  const even = isEven(w0, w1);
+  const slope = even ? 0 : (w1 - w0) / (to - from);
+  const width = even ? gap : w0 - slope * from;
+  return { axis: { kind: 'arc', x, y, radius, width, slope }, from, to, beyond: [0, 0] };
 }
 
 /** The axis of a bend whose inner wall is one corner: the outer wall turns about it. */
 export function cornerPair(outer: Wall, x: number, y: number): Pair | null {
   if (!(outer.sweep > 0)) return null;
-  if (Math.hypot(outer.cx - x, outer.cy - y) > CONCENTRIC * outer.radius + 5) return null;
+  if (Math.hypot(outer.cx - x, outer.cy - y) > ON_CORNER * outer.radius + 5) return null;
   const from = Math.atan2(outer.y0 - outer.cy, outer.x0 - outer.cx);
-  const axis = { kind: 'arc', x, y, radius: outer.radius / 2, width: outer.radius } as const;
-  return { axis, from, to: from + outer.sweep };
+  const axis = { kind: 'arc', x, y, radius: outer.radius / 2, width: outer.radius, slope: 0 } as const;
+  return { axis, from, to: from + outer.sweep, beyond: [0, 0] };
 }
 
 export function pointOn(axis: Axis, s: number): [number, number] {
@@ -139,7 +153,7 @@ export function directionOn(axis: Axis, s: number): [number, number] {
 }
 
 export function widthOn(axis: Axis, s: number): number {
-  return axis.kind === 'line' ? axis.width + axis.slope * s : axis.width;
+  return axis.width + axis.slope * s;
 }
 
 /** Length in nm between two places. */

@@ -167,6 +167,7 @@ function levelsOf(loops: Paths64, work: Work): Paths64[] {
   for (const { left, top, right, bottom } of boxes) index.add(left, top, right, bottom);
   index.finish();
   const levels: Paths64[] = [];
+  const outlines: Outline[] = [];
   loops.forEach((loop, i) => {
     const box = boxes[i];
     let depth = 0;
@@ -176,8 +177,9 @@ function levelsOf(loops: Paths64, work: Work): Paths64[] {
       if (sizes[other] <= sizes[i]) continue;
       if (around.left > box.left || around.right < box.right) continue;
       if (around.top > box.top || around.bottom < box.bottom) continue;
-      work.tick((loop.length * loops[other].length) >> 6);
-      if (holds(loops[other], loop)) depth += 1;
+      work.tick(1 + (loop.length >> 4));
+      outlines[other] ??= new Outline(loops[other]);
+      if (outlines[other].holds(loop)) depth += 1;
     }
     levels[depth] ??= [];
     levels[depth].push(loop);
@@ -185,18 +187,38 @@ function levelsOf(loops: Paths64, work: Work): Paths64[] {
   return Array.from(levels, (level) => level ?? []);
 }
 
-/** Whether a loop lies within another, touching allowed. */
-function holds(outer: Path64, inner: Path64): boolean {
-  for (const { x, y } of inner) {
+/** A loop that is asked again and again what lies within it. */
+class Outline {
+  readonly #path: Path64;
+  readonly #index: Flatbush;
+
+  constructor(path: Path64) {
+    this.#path = path;
+    this.#index = new Flatbush(path.length);
+    for (let i = 0, j = path.length - 1; i < path.length; j = i, i += 1) {
+      const [a, b] = [path[i], path[j]];
+      this.#index.add(Math.min(a.x, b.x), Math.min(a.y, b.y), Math.max(a.x, b.x), Math.max(a.y, b.y));
+    }
+    this.#index.finish();
+  }
+
+  /** Whether a loop lies within, touching allowed. */
+  holds(inner: Path64): boolean {
+    return inner.every(({ x, y }) => this.#reaches(x, y));
+  }
+
+  #reaches(x: number, y: number): boolean {
+    const path = this.#path;
     let inside = false;
     let on = false;
-    for (let i = 0, j = outer.length - 1; i < outer.length; j = i, i += 1) {
-      const [a, b] = [outer[i], outer[j]];
+    // Edges level with the point, or to the right of it.
+    this.#index.search(x, y, Infinity, y, (i) => {
+      const [a, b] = [path[i], path[i === 0 ? path.length - 1 : i - 1]];
       const cross = (b.x - a.x) * (y - a.y) - (b.y - a.y) * (x - a.x);
       if (cross === 0 && (x - a.x) * (x - b.x) <= 0 && (y - a.y) * (y - b.y) <= 0) on = true;
       if (a.y > y !== b.y > y && x < ((b.x - a.x) * (y - a.y)) / (b.y - a.y) + a.x) inside = !inside;
-    }
-    if (!on && !inside) return false;
+      return false;
+    });
+    return on || inside;
   }
-  return true;
 }

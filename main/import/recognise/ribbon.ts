@@ -1,4 +1,4 @@
-import { type Axis, type Pair, pairOf, placeOn, pointOn } from './pairs.ts';
+import { type Axis, type Pair, pairOf, placeOn, pointOn, widthOn } from './pairs.ts';
 import { type Knot, type Strip, type Strips, stripOn } from './strips.ts';
 import type { Wall } from './walls.ts';
 
@@ -39,8 +39,8 @@ function ribbonFrom(walls: readonly Wall[], cap: number): Strips | null {
   for (let k = 1; k < n / 2; k += 1) {
     const [right, left] = [walls[cap + k], walls[(cap + n - k) % n]];
     const pair = pairOf(right, left);
-    if (!pair || Math.abs(pair.axis.width - width) > ROUNDING) return null;
-    if (pair.axis.kind === 'line' && pair.axis.slope !== 0) return null;
+    if (!pair || Math.abs(widthOn(pair.axis, pair.from) - width) > ROUNDING) return null;
+    if (pair.axis.slope !== 0) return null;
     pairs.push({ right, left, pair });
   }
   const stretches: Stretch[] = pairs.map(({ right, pair: { axis, from, to } }) =>

@@ -79,9 +79,12 @@ const OVERLAP = 8;
 
 /** The parts of `ground` that `covered` leaves, without what is only a thin edge. */
 function restOf(ground: Paths64, covered: Paths64, narrowest: number): Area[] {
-  const left = covered.length > 0 ? Clipper.difference(ground, covered, FillRule.NonZero) : ground;
-  if (left.length === 0) return [];
   const thin = Math.min(THICKEST, Math.max(THINNEST, THIN_SHARE * narrowest));
+  // A sliver of rounding that runs the wrong way round would turn all others into holes.
+  const left = (covered.length > 0 ? Clipper.difference(ground, covered, FillRule.NonZero) : ground).filter(
+    (path) => Math.abs(Clipper.area(path)) > thin * thin,
+  );
+  if (left.length === 0) return [];
   const thick = Clipper.inflatePaths(left, -thin, JoinType.Miter, EndType.Polygon, 4);
   if (thick.length === 0) return [];
   const again = Clipper.inflatePaths(thick, thin + OVERLAP, JoinType.Miter, EndType.Polygon, 4);

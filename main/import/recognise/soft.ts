@@ -4,7 +4,7 @@ import type { Triangles } from './triangles.ts';
 /** A soft strip is at least this many times as long as wide. */
 const LONGEST_KNOT = 1.5;
 /** Furthest that its points lie off the line between those that are kept, as a share of the width; and in nm. */
-const OFF = 0.004;
+const OFF = 0.001;
 const OFF_NM = 20;
 
 interface Sample {
@@ -119,7 +119,7 @@ function softStrip(chain: readonly number[], triangles: Triangles): Strip | null
   const kept = simplified(samples, Math.max(OFF_NM, OFF * narrowest));
   const end = (a: Sample, b: Sample): StripEnd => {
     const d = Math.hypot(a.x - b.x, a.y - b.y);
-    return { x: a.x, y: a.y, ux: (a.x - b.x) / d, uy: (a.y - b.y) / d, width: a.width, knot: -1 };
+    return { x: a.x, y: a.y, ux: (a.x - b.x) / d, uy: (a.y - b.y) / d, width: a.width, aslant: 0, knot: -1 };
   };
   const last = kept.length - 1;
   return {

@@ -33,6 +33,8 @@ export interface StripEnd {
   readonly ux: number;
   readonly uy: number;
   readonly width: number;
+  /** How much further its centreline goes to the middle of a mouth that is cut aslant, nm. */
+  readonly aslant: number;
   /** Knot that it leads into; −1 where the wall closes it. */
   knot: number;
 }
@@ -60,7 +62,8 @@ export function stripsOf(walls: readonly Wall[], triangles: Triangles): Strips {
   const strip = new Int32Array(triangles.count).fill(-1);
   const strips: Strip[] = [];
   for (const run of runsOf(triangles, labels.of)) {
-    const found = hardStrip(labels.pairs[labels.of[run[0]]], run, triangles);
+    const label = labels.of[run[0]];
+    const found = hardStrip(labels.pairs[label], run, triangles, (end) => mouthAt(walls, labels, label, end));
     if (!found) continue;
     for (const t of run) strip[t] = strips.length;
     strips.push(found);
@@ -75,6 +78,8 @@ export function stripsOf(walls: readonly Wall[], triangles: Triangles): Strips {
 /** Which pair of walls each triangle lies between; −1 where none. */
 class Labels {
   readonly pairs: Pair[] = [];
+  /** Numbers of the two walls of each; the second is -1 where it is a corner. */
+  readonly walls: (readonly [number, number])[] = [];
   readonly of: Int32Array;
   readonly #known = new Map<string, number>();
   readonly #walls: readonly Wall[];
@@ -103,11 +108,12 @@ class Labels {
     }
   }
 
-  #keep(key: string, make: () => Pair | null): number {
+  #keep(key: string, e: number, f: number, make: () => Pair | null): number {
     let label = this.#known.get(key);
     if (label === undefined) {
       const pair = make();
       label = pair ? this.pairs.push(pair) - 1 : -1;
+      if (pair) this.walls.push([e, f]);
       this.#known.set(key, label);
     }
     return label;
@@ -115,12 +121,12 @@ class Labels {
 
   #pair(e: number, f: number): number {
     if (e === f) return -1;
-    return this.#keep(e < f ? `${e} ${f}` : `${f} ${e}`, () => pairOf(this.#walls[e], this.#walls[f]));
+    return this.#keep(e < f ? `${e} ${f}` : `${f} ${e}`, e, f, () => pairOf(this.#walls[e], this.#walls[f]));
   }
 
   #corner(e: number, apex: number, x: number, y: number): number {
     if (this.#walls[e].sweep <= 0) return -1;
-    return this.#keep(`${e}.${apex}`, () => cornerPair(this.#walls[e], x, y));
+    return this.#keep(`${e}.${apex}`, e, -1, () => cornerPair(this.#walls[e], x, y));
   }
 }
 
@@ -146,9 +152,10 @@ function* runsOf({ twin, count }: Triangles, label: Int32Array): Generator<numbe
 }
 
 function hardStrip(
-  { axis, from, to }: Pair,
+  { axis, from, to, beyond }: Pair,
   run: readonly number[],
   { vertex, x, y }: Triangles,
+  mouth: (end: 0 | 1) => number | null,
 ): Strip | null {
   const middle = (from + to) / 2;
   let [low, high] = [Infinity, -Infinity];
@@ -166,17 +173,81 @@ function hardStrip(
   const reach = axis.kind === 'line' ? SNAP * wide : (SNAP * wide) / axis.radius;
   if (low - from < reach) low = from;
   if (to - high < reach) high = to;
-  return stripOn(axis, low, high, wide);
+  const aslant = ([0, 1] as const).map((end) => {
+    if (end === 0 ? low !== from : high !== to) return 0;
+    const at = mouth(end);
+    const by = at === null ? beyond[end] / 2 : end === 0 ? from - at : at - to;
+    return beyond[end] <= wide && Math.abs(by) <= wide ? by : 0;
+  });
+  return stripOn(axis, low, high, wide, [aslant[0], aslant[1]]);
+}
+
+/** Lines that cross the centreline within this of each other are one, nm. */
+const SAME_LINE = 20;
+/** Least slope across the centreline of a wall that is led on across it. */
+const LEAST_RISE = 0.3;
+
+/**
+ * Where the centreline between two straight walls crosses the outline of what they open into: the walls
+ * beyond the mouth are led on into it, up to where they meet. Null where they do not tell.
+ */
+function mouthAt(walls: readonly Wall[], labels: Labels, label: number, end: 0 | 1): number | null {
+  const { axis, from, to } = labels.pairs[label];
+  const [e, f] = labels.walls[label];
+  if (axis.kind !== 'line' || f < 0) return null;
+  const middle = (from + to) / 2;
+  const [x, y] = pointOn(axis, middle);
+  const [one, other] = [e, f].map((k) => {
+    // The walls run round the fluid, so that one leads up to the mouth and the other away from it.
+    const own = walls[k];
+    const along = (own.x1 - own.x0) * axis.ux + (own.y1 - own.y0) * axis.uy;
+    const wall = besideOf(walls, k, along > 0 === (end === 1) ? 'after' : 'before');
+    if (wall?.sweep !== 0) return null;
+    const place = (px: number, py: number): [number, number] => [
+      (px - x) * axis.ux + (py - y) * axis.uy,
+      (py - y) * axis.ux - (px - x) * axis.uy,
+    ];
+    const [[s0, o0], [s1, o1]] = [place(wall.x0, wall.y0), place(wall.x1, wall.y1)];
+    if (Math.abs(o1 - o0) < LEAST_RISE * Math.abs(s1 - s0)) return null;
+    // s = at + lean times the offset from the axis.
+    const lean = (s1 - s0) / (o1 - o0);
+    return { at: s0 - lean * o0, lean, side: Math.sign(o0 + o1) };
+  });
+  if (!one || !other || one.side === other.side) return null;
+  if (Math.abs(one.at - other.at) <= SAME_LINE) return middle + (one.at + other.at) / 2;
+  const corner = (other.at - one.at) / (one.lean - other.lean);
+  if (!(Math.abs(corner) < widthOn(axis, end === 0 ? from : to) / 2)) return null;
+  // The line that lies on the centreline's side of the corner between them.
+  return middle + (corner * one.side < 0 ? one.at : other.at);
+}
+
+/** The wall next to another in its loop, by the corner that they have in common. */
+function besideOf(walls: readonly Wall[], k: number, where: 'before' | 'after'): Wall | null {
+  const wall = walls[k];
+  // Mostly the next in the list; the last of a loop is followed by its first.
+  for (let n = 1; n < walls.length; n += 1) {
+    const other = walls[(where === 'after' ? k + n : k + walls.length - n) % walls.length];
+    if (where === 'after' && other.x0 === wall.x1 && other.y0 === wall.y1) return other;
+    if (where === 'before' && other.x1 === wall.x0 && other.y1 === wall.y0) return other;
+  }
+  return null;
 }
 
 /** The stretch of an axis between two places; null where it is too short to be one. */
-export function stripOn(axis: Axis, from: number, to: number, wide: number): Strip | null {
+export function stripOn(
+  axis: Axis,
+  from: number,
+  to: number,
+  wide: number,
+  aslant: readonly [number, number] = [0, 0],
+): Strip | null {
   const length = lengthOn(axis, from, to);
   if (length < SHORTEST * wide && axis.kind === 'line') return null;
   const end = (s: number, sign: 1 | -1): StripEnd => {
     const [x, y] = pointOn(axis, s);
     const [ux, uy] = directionOn(axis, s);
-    return { x, y, ux: sign * ux, uy: sign * uy, width: Math.max(0, widthOn(axis, s)), knot: -1 };
+    const width = Math.max(0, widthOn(axis, s));
+    return { x, y, ux: sign * ux, uy: sign * uy, width, aslant: aslant[sign < 0 ? 0 : 1], knot: -1 };
   };
   return { soft: null, axis, from, to, length, ends: [end(from, -1), end(to, 1)] };
 }
