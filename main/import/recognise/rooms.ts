@@ -93,9 +93,12 @@ function restOf(ground: Paths64, covered: Paths64, narrowest: number): Area[] {
   return booleanAreas(ClipType.Intersection, both, ground);
 }
 
-/** An area as outlines without holes: cut through its holes, the parts overlapping a little. */
+/** Steps that growing and rounding leave in an outline, nm: a chamber has none as small. */
+const STEP = 12;
+
+/** An area as outlines without holes and without steps of rounding: cut through its holes, the parts overlapping a little. */
 export function withoutHoles(area: Area, depth = 0): Paths64 | null {
-  if (area.holes.length === 0) return [area.outer];
+  if (area.holes.length === 0) return [Clipper.simplifyPath(area.outer, STEP)];
   if (depth > 60) return null;
   const box = Clipper.getBounds(area.outer);
   const hole = Clipper.getBounds(area.holes[area.holes.length >> 1]);
