@@ -1,4 +1,5 @@
 import { loadavg } from 'node:os';
+import { BOMBS, readBomb, readMutated, SEEDS } from '../import/hostile.ts';
 import { harmMany, opening } from './damage.ts';
 import { fillDisk } from './full-disk.ts';
 import { HAND_MADE, handMade, openMutated } from './hostile.ts';
@@ -8,7 +9,8 @@ import { salvageEveryPage } from './salvage.ts';
 import { inFolder, sampleBytes } from './sample.ts';
 
 /**
- * The tests of the project file in full: `npm run faults [-- kill inject damage salvage hostile full]`.
+ * The tests of the project file and of drawings that come in, in full:
+ * `npm run faults [-- kill inject damage salvage hostile full drawings]`.
  * Prints what was done and found; ends with 1 where something was lost.
  */
 const wanted = process.argv.slice(2);
@@ -105,6 +107,29 @@ await part('full', async () => {
   return {
     line: `${full.how}: ${full.acknowledged} steps acknowledged, all there: ${full.same}; told: ${full.told}`,
     good: full.same && full.seq === full.acknowledged + 1,
+  };
+});
+
+await part('drawings', async () => {
+  const counts: string[] = [];
+  let longest = 0;
+  for (const kind of Object.keys(SEEDS)) {
+    const read = readMutated(kind, 10_000, 1000 + kind.charCodeAt(0));
+    counts.push(`${read.refused} of 10,000 ${kind}`);
+    longest = Math.max(longest, read.longest);
+  }
+  let [slowest, largest, refused] = [0, 0, 0];
+  for (const name of Object.keys(BOMBS)) {
+    const { ended, seconds, megabytes } = await readBomb(name);
+    if (ended.kind === 'failed' && !/stopped\.$/.test(ended.problem.what)) refused += 1;
+    else console.log(`     not refused by name: ${name}`);
+    slowest = Math.max(slowest, seconds);
+    largest = Math.max(largest, megabytes);
+  }
+  const bombs = Object.keys(BOMBS).length;
+  return {
+    line: `mutated files refused by name: ${counts.join(', ')}, the others read, longest ${longest.toFixed(2)} s; ${refused} of ${bombs} bombs refused, slowest ${slowest.toFixed(1)} s, most ${largest.toFixed(0)} MB`,
+    good: longest < 5 && refused === bombs && slowest < 5 && largest < 500,
   };
 });
 
