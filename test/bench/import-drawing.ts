@@ -49,3 +49,27 @@ export function largeDxf(entities: number): string {
   put(0, 'ENDSEC', 0, 'EOF');
   return `${out.join('\n')}\n`;
 }
+
+/** A DXF drawing of rectangles that overlap to networks of `each`: two rails, and rungs of unlike widths between them. */
+export function networksDxf(entities: number, each: number): string {
+  const out: (string | number)[] = [0, 'SECTION', 2, 'HEADER', 9, '$INSUNITS', 70, 13, 0, 'ENDSEC'];
+  out.push(0, 'SECTION', 2, 'ENTITIES');
+  const rectangle = (x0: number, y0: number, x1: number, y1: number): void => {
+    out.push(0, 'LWPOLYLINE', 8, 'FLOW', 90, 4, 70, 1);
+    out.push(10, x0, 20, y0, 10, x1, 20, y0, 10, x1, 20, y1, 10, x0, 20, y1);
+  };
+  const columns = 25;
+  const rungs = each - 2;
+  for (let n = 0; n * each < entities; n += 1) {
+    const x = 1000 + (n % columns) * (rungs * 300 + 1000);
+    const y = 1000 + Math.floor(n / columns) * 2500;
+    rectangle(x, y, x + rungs * 300, y + 100 + n / 10);
+    rectangle(x, y + 1500, x + rungs * 300, y + 1600);
+    for (let k = 0; k < rungs; k += 1) {
+      const left = x + 100 + 300 * k;
+      rectangle(left, y + 50, left + 50 + (k % 3) * 5, y + 1550);
+    }
+  }
+  out.push(0, 'ENDSEC', 0, 'EOF');
+  return `${out.join('\n')}\n`;
+}
