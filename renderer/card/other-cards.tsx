@@ -7,6 +7,7 @@ import { PARTS, type Ref } from '../state/ref.ts';
 import { useStore } from '../state/store.ts';
 import type { PartValue } from '../tools/tool.ts';
 import { capital, counted, figure, lengthFigure } from '../words/figure.ts';
+import { DriveFields } from './drive-fields.tsx';
 import { MakerCard } from './maker-card.tsx';
 import { PartName } from './part-name.tsx';
 import { PlaceFields, PlacesField } from './place-fields.tsx';
@@ -128,6 +129,7 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
   const parts = findParts(chip, refs);
   const channels = parts.flatMap((part) => (part.kind === 'channel' ? [part.value] : []));
   const ports = parts.flatMap((part) => (part.kind === 'port' ? [part.value] : []));
+  const vias = parts.flatMap((part) => (part.kind === 'via' ? [part.value] : []));
   const kinds = PARTS.map(
     (kind) => [kind, parts.filter((part) => part.kind === kind).length] as const,
   ).filter(([, n]) => n > 0);
@@ -178,6 +180,29 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
               change(
                 `set the hole of ${counted(ports.length, 'port')}`,
                 ports.map((port) => ({ kind: 'port', value: { ...port, diameter: nm(value) } })),
+              )
+            }
+          />
+        )}
+        <DriveFields
+          drives={ports.map((port) => port.drive)}
+          onDrive={(drive) =>
+            change(
+              `set the drive of ${counted(ports.length, 'port')}`,
+              ports.map((port) => ({ kind: 'port', value: { ...port, drive } })),
+            )
+          }
+        />
+        {vias.length > 0 && (
+          <QuantityField
+            label="Diameter of vias"
+            value={toMetres(common(vias.map((via) => via.diameter)))}
+            kind="length"
+            unit="um"
+            onAccept={(value) =>
+              change(
+                `set the diameter of ${counted(vias.length, 'via')}`,
+                vias.map((via) => ({ kind: 'via', value: { ...via, diameter: nm(value) } })),
               )
             }
           />

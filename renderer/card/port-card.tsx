@@ -3,7 +3,9 @@ import type { Pump, Reservoir } from '../../solver/chip/running.ts';
 import { usePage } from '../page/context.tsx';
 import { useAnswer } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
+import { plusMinus } from '../words/band.ts';
 import { figure, lengthFigure } from '../words/figure.ts';
+import { DriveFields } from './drive-fields.tsx';
 import { PartName } from './part-name.tsx';
 import { PlaceFields } from './place-fields.tsx';
 import { PlaceFindings } from './place-findings.tsx';
@@ -11,20 +13,6 @@ import { PumpFields, ReservoirFields } from './pump-fields.tsx';
 import { QuantityField } from './quantity-field.tsx';
 import { TargetFields } from './target-fields.tsx';
 import { ChoiceField, Figure } from './text-field.tsx';
-
-const DRIVES = [
-  ['pressure', 'a pressure'],
-  ['flow', 'a flow'],
-  ['head', 'a reservoir'],
-  ['closed', 'closed'],
-] as const satisfies readonly (readonly [Drive['kind'], string])[];
-
-const FIRST: Readonly<Record<Drive['kind'], Drive>> = {
-  pressure: { kind: 'pressure', pressure: 0 },
-  flow: { kind: 'flow', flow: 1e-8 / 60 },
-  head: { kind: 'head', head: 0.1 },
-  closed: { kind: 'closed' },
-};
 
 /** One port: its drive, its hole, its tubing, what it carries. */
 export function PortCard({ port }: { readonly port: Port }) {
@@ -55,38 +43,7 @@ export function PortCard({ port }: { readonly port: Port }) {
         port at {lengthFigure(port.at[0])}, {lengthFigure(port.at[1])} · layer {port.layer}
       </p>
       <div className="fields">
-        <ChoiceField
-          label="Driven by"
-          value={port.drive.kind}
-          choices={DRIVES}
-          onAccept={(kind) => drive(FIRST[kind])}
-        />
-        {port.drive.kind === 'pressure' && (
-          <QuantityField
-            label="Pressure"
-            value={port.drive.pressure}
-            kind="pressure"
-            onAccept={(pressure) => drive({ kind: 'pressure', pressure })}
-          />
-        )}
-        {port.drive.kind === 'flow' && (
-          <QuantityField
-            label="Flow into the chip"
-            value={port.drive.flow}
-            kind="flow"
-            unit="uL/min"
-            onAccept={(flow) => drive({ kind: 'flow', flow })}
-          />
-        )}
-        {port.drive.kind === 'head' && (
-          <QuantityField
-            label="Surface above the chip"
-            value={port.drive.head}
-            kind="length"
-            unit="mm"
-            onAccept={(head) => drive({ kind: 'head', head })}
-          />
-        )}
+        <DriveFields drives={[port.drive]} onDrive={drive} />
         <PlaceFields part={{ kind: 'port', value: port }} />
         <QuantityField
           label="Hole"
@@ -129,7 +86,7 @@ export function PortCard({ port }: { readonly port: Port }) {
                 put({ tubing: port.tubing.filter((_, k) => k !== i) }, `take tubing off ${port.id}`)
               }
             >
-              Take it off
+              Take this tubing off
             </button>
           </fieldset>
         ))}
@@ -140,7 +97,7 @@ export function PortCard({ port }: { readonly port: Port }) {
             put({ tubing: [...port.tubing, { bore: 0.5e-3, length: 0.3 }] }, `put tubing on ${port.id}`)
           }
         >
-          Put tubing on
+          {port.tubing.length > 0 ? 'Put more tubing on' : 'Put tubing on'}
         </button>
         {chip.layers.length > 1 && (
           <ChoiceField
@@ -161,8 +118,14 @@ export function PortCard({ port }: { readonly port: Port }) {
         {solved ? (
           <>
             <Figure label="Pressure at the chip" figure={figure(solved.pressure, 'pressure')} />
-            <Figure label="Flow into the chip" figure={figure(solved.flow, 'flow')} />
-            <Figure label="Share of all" figure={figure(solved.share, 'share', { unit: '%' })} />
+            <Figure
+              label="Flow into the chip"
+              figure={`${figure(solved.flow, 'flow')}${plusMinus(solved.band?.flow)}`}
+            />
+            <Figure
+              label="Share of all"
+              figure={`${figure(solved.share, 'share', { unit: '%' })}${plusMinus(solved.band?.share)}`}
+            />
           </>
         ) : (
           <p className="soft">Its flow comes with the first answer.</p>

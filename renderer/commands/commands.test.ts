@@ -44,6 +44,7 @@ test('a key that a person gives goes before one that a command had at first, and
   const own = commands({ 'tool measure': 'c', undo: '' });
   expect(own.forKey('c')!.id).toBe('tool measure');
   expect(own.keyOf('tool measure')).toBe('c');
+  expect(own.keyOf('tool channel')).toBe('');
   expect(own.keyOf('undo')).toBe('');
   expect(own.forKey('Ctrl+z')).toBeNull();
 });

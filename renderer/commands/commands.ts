@@ -29,6 +29,11 @@ export function createCommands(desk: Desk, bench: Workbench, ownKeys: () => OwnK
     const own = ownKeys()[command.id];
     return own === undefined ? command.keys : own === '' ? [] : [own];
   };
+  // a key that a person gave goes before one that a command had at first
+  const forKey = (key: string): Command | null =>
+    all.find((command) => ownKeys()[command.id] === key) ??
+    all.find((command) => keysOf(command).includes(key)) ??
+    null;
   return {
     all,
     byId,
@@ -38,15 +43,9 @@ export function createCommands(desk: Desk, bench: Workbench, ownKeys: () => OwnK
       if (why) desk.say(why);
       else void command.run();
     },
-    forKey(key) {
-      // a key that a person gave goes before one that a command had at first
-      return (
-        all.find((command) => ownKeys()[command.id] === key) ??
-        all.find((command) => keysOf(command).includes(key)) ??
-        null
-      );
-    },
-    keyOf: (id) => keysOf(byId(id))[0] ?? '',
+    forKey,
+    // a key that went over to another command is not shown here any more
+    keyOf: (id) => keysOf(byId(id)).find((key) => forKey(key)?.id === id) ?? '',
     show(ref) {
       const chip = desk.chip();
       if (!chip) return;

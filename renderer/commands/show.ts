@@ -27,7 +27,7 @@ function siteBox(desk: Desk, selection: readonly string[]): Box | null {
   const widths = chip.channels
     .filter(({ path }) => path.some((p) => Math.hypot(p[0] - site.at[0], p[1] - site.at[1]) < 1_000_000))
     .map(({ width }) => Math.max(...width));
-  const reach = 2.5 * Math.max(100_000, ...widths);
+  const reach = 1.5 * Math.max(100_000, ...widths);
   const [x, y] = site.at;
   return { left: x - reach, right: x + reach, bottom: y - reach, top: y + reach };
 }

@@ -42,7 +42,10 @@ export function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
   const { high } = size;
   const columns = useMemo(() => shown.map((i) => table.columns[i]!), [table, shown]);
   const writings = useMemo(() => table.columns.map((column, i) => writingOf(column, table.rows, i)), [table]);
-  const layout = useMemo(() => layoutOf(table, shown, writings, measure), [table, shown, writings, measure]);
+  const layout = useMemo(
+    () => layoutOf(table, shown, writings, measure, order?.column),
+    [table, shown, writings, measure, order?.column],
+  );
   const widths = useMemo(() => fittedWidths(table, layout, size.wide - 2 * EDGE), [table, layout, size.wide]);
   const tall = useMemo(
     () => rowHeight(table, layout, widths, measure, ROW),

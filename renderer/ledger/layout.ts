@@ -1,8 +1,7 @@
 import { cellText, headText, type Row, type Table, type Writing } from './table.ts';
 
-/** px: padding of a cell, both sides together, and the arrow of a column in order. */
-const PADDING = 14;
-const ARROW = 12;
+/** px: padding of a cell, both sides together, and a little for the rounding of widths. */
+const PADDING = 15;
 /** px: a name of one's own is given no more than this, a sentence no less and no more than these. */
 const NAME_MOST = 300;
 const SENTENCE_LEAST = 220;
@@ -58,10 +57,12 @@ export function layoutOf(
   shown: readonly number[],
   writings: readonly Writing[],
   measure: Measure,
+  /** Id of the column that the rows are in order of, which an arrow says. */
+  ordered = '',
 ): Layout {
   const widths = shown.map((i) => {
     const column = table.columns[i]!;
-    let most = measure(headText(column, writings[i]!), 'head') + ARROW;
+    let most = measure(`${headText(column, writings[i]!)}${ordered === column.id ? ' ↓' : ''}`, 'head');
     for (const row of telling(table.rows, i))
       most = Math.max(most, measure(cellText(row.cells[i], column, writings[i]!), 'cell'));
     const limit = column.sentence ? SENTENCE_MOST : column.kind ? most : NAME_MOST;

@@ -72,7 +72,7 @@ function Finder({ wish }: { readonly wish: FileWish }) {
                 }}
               >
                 {entry.name}
-                {entry.kind === 'folder' && <span className="soft"> folder</span>}
+                {entry.kind === 'folder' && <span className="soft"> · folder</span>}
               </button>
             </li>
           ))}
@@ -98,7 +98,7 @@ function Finder({ wish }: { readonly wish: FileWish }) {
           </button>
         )}
         <button type="button" className="plain-button" onClick={() => wish.done(null)}>
-          Leave it
+          Cancel
         </button>
       </div>
     </dialog>

@@ -6,7 +6,14 @@ import { keyShown, keyText } from '../commands/command.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 
-const UNITS_OF: readonly Kind[] = ['pressure', 'stress', 'flow', 'velocity', 'time'];
+const UNITS_OF = ['pressure', 'stress', 'flow', 'velocity', 'time'] as const satisfies readonly Kind[];
+const UNIT_NAMES: Readonly<Record<(typeof UNITS_OF)[number], string>> = {
+  pressure: 'Pressure',
+  stress: 'Wall shear',
+  flow: 'Flow',
+  velocity: 'Speed',
+  time: 'Time',
+};
 
 /** Every command with its key, to be changed; and the units in which figures are shown. */
 export function KeysPanel() {
@@ -34,7 +41,7 @@ export function KeysPanel() {
         {UNITS_OF.map((kind) => (
           <ChoiceField
             key={kind}
-            label={kind === 'stress' ? 'wall shear' : kind}
+            label={UNIT_NAMES[kind]}
             value={own.units[kind] ?? 'best'}
             choices={[
               ['best', 'whichever suits'],

@@ -3,7 +3,11 @@ import type { Output } from '../../main/contract/contract.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 
-const day = new Intl.DateTimeFormat('en-GB', { dateStyle: 'medium', timeStyle: 'medium' });
+const day = new Intl.DateTimeFormat('en-GB', { dateStyle: 'medium', timeStyle: 'short' });
+const hour = new Intl.DateTimeFormat('en-GB', { timeStyle: 'medium' });
+/** Of today the time alone. */
+const whenOf = (made: number): string =>
+  new Date(made).toDateString() === new Date().toDateString() ? hour.format(made) : day.format(made);
 
 /** Everything done, newest first. */
 export function HistoryPanel() {
@@ -24,8 +28,13 @@ export function HistoryPanel() {
     <ol className="history">
       {steps.map((step) => (
         <li key={step.seq} className={step.undone ? 'soft' : undefined}>
-          {step.label}
-          {step.undone && ', taken back'} <span className="soft small">{day.format(step.made)}</span>
+          <span>
+            {step.label}
+            {step.undone && ', taken back'}
+          </span>
+          <time className="soft small" dateTime={new Date(step.made).toISOString()}>
+            {whenOf(step.made)}
+          </time>
         </li>
       ))}
     </ol>

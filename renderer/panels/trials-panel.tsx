@@ -131,7 +131,7 @@ function Compared({ held }: { readonly held: Held }) {
           )}
         </div>
       ))}
-      <table className="plain-table">
+      <table className="plain-table figures">
         <thead>
           <tr>
             <th scope="col">port</th>

@@ -10,7 +10,7 @@ export interface PlotProps {
   readonly across: string;
   readonly up: string;
   /** Lines drawn from side to side, with their words. */
-  readonly limits?: readonly { readonly at: number; readonly says: string }[];
+  readonly limits?: readonly { readonly at: number; readonly says: string; readonly missed: boolean }[];
   readonly more?: Partial<Layout>;
   /** What the plot says, for those who do not see it. */
   readonly says: string;
@@ -47,16 +47,16 @@ export function Plot({ title, data, across, up, limits = [], more, says }: PlotP
         xaxis: { ...axis, showgrid: false, title: { text: across } },
         yaxis: { ...axis, title: { text: up } },
         showlegend: false,
-        shapes: limits.map(({ at }) => ({
+        shapes: limits.map(({ at, missed }) => ({
           type: 'line' as const,
           xref: 'paper' as const,
           x0: 0,
           x1: 1,
           y0: at,
           y1: at,
-          line: { color: look.alarm, width: 1, dash: 'dash' as const },
+          line: { color: missed ? look.alarm : look.soft, width: 1, dash: 'dash' as const },
         })),
-        annotations: limits.map(({ at, says: words }) => ({
+        annotations: limits.map(({ at, says: words, missed }) => ({
           xref: 'paper' as const,
           x: 1,
           y: at,
@@ -64,7 +64,7 @@ export function Plot({ title, data, across, up, limits = [], more, says }: PlotP
           showarrow: false,
           xanchor: 'right' as const,
           yanchor: 'bottom' as const,
-          font: { color: look.alarm },
+          font: { color: missed ? look.alarm : look.soft },
         })),
         hoverlabel: { bgcolor: look.card, bordercolor: look.soft, font: { color: look.ink } },
         ...more,

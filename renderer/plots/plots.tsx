@@ -5,9 +5,11 @@ import { ChoiceField } from '../card/text-field.tsx';
 import { onTheme, palette } from '../look/theme.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
+import { placeName } from '../verdict/answer.ts';
+import { plusMinus } from '../words/band.ts';
 import { figure, unitFor } from '../words/figure.ts';
 import { Plot } from './plot.tsx';
-import { legsOf, profileOf, routeEnds } from './route.ts';
+import { legsOf, limitAlong, peaksAlong, profileOf, routeEnds } from './route.ts';
 import { SweepPlots } from './sweep.tsx';
 
 /** Pressure and shear along a route, shares against targets, and a sweep. */
@@ -43,11 +45,13 @@ function RoutePlots() {
   const longest = profile.along.at(-1) ?? 0;
   const length = unitFor(longest, 'length');
   const pressure = unitFor(Math.max(0, ...profile.pressure.map((value) => Math.abs(value ?? 0))), 'pressure');
-  const stress = unitFor(Math.max(0, ...profile.shear.map((value) => value ?? 0)), 'stress');
+  const peaks = peaksAlong(result, legs);
+  const peak = Math.max(0, ...profile.shear.map((value) => value ?? 0), ...peaks.map(({ shear }) => shear));
+  const stress = unitFor(peak, 'stress');
+  const peakBand = [...legs, ...peaks].find(({ shear }) => shear === peak)?.band;
   const along = profile.along.map((value) => inUnit(value, length));
   const across = `from ${from}, ${unitInPrint(length)}`;
-  const limit = chip.limits.find((entry) => 'shear' in entry && entry.where === undefined);
-  const peak = Math.max(...profile.shear.map((value) => value ?? 0));
+  const limit = limitAlong(chip.limits, legs, from, to);
   return (
     <section aria-label="Along a route">
       <div className="fields">
@@ -76,16 +80,21 @@ function RoutePlots() {
         ]}
       />
       <Plot
-        title="Wall shear along the route"
+        title={
+          peaks.length > 0
+            ? 'Wall shear along the route, peaks in junctions as rings'
+            : 'Wall shear along the route'
+        }
         across={across}
         up={unitInPrint(stress)}
-        says={`Wall shear at most ${figure(peak, 'stress', { digits: 3 })}${limit && 'shear' in limit ? `, the limit is ${figure(limit.shear, 'stress', { digits: 3 })}` : ''}.`}
+        says={`Wall shear at most ${figure(peak, 'stress', { digits: 3 })}${plusMinus(peakBand)}${limit ? `, the limit is ${figure(limit.shear, 'stress', { digits: 3 })}` : ''}.`}
         limits={
-          limit && 'shear' in limit
+          limit
             ? [
                 {
                   at: inUnit(limit.shear, stress),
                   says: `limit ${figure(limit.shear, 'stress', { digits: 3 })}`,
+                  missed: peak > limit.shear,
                 },
               ]
             : []
@@ -105,8 +114,33 @@ function RoutePlots() {
             x: along,
             y: profile.shear.map((value) => (value === null ? null : inUnit(value, stress))),
             text: profile.names,
+            customdata: profile.bands.map(plusMinus),
             line: { color: look.ink, width: 1.5 },
-            hovertemplate: '%{text}: %{y:.4g}<extra></extra>',
+            hovertemplate: '%{text}: %{y:.4g}%{customdata}<extra></extra>',
+          },
+          {
+            type: 'scatter',
+            mode: 'markers',
+            x: peaks.map(({ at }) => inUnit(at, length)),
+            y: peaks.map(({ shear }) => inUnit(shear, stress)),
+            customdata: peaks.map(({ band }) => plusMinus(band)),
+            error_y: {
+              type: 'data',
+              array: peaks.map(({ shear, band }) => inUnit(shear * (band ?? 0), stress)),
+              color: look.soft,
+              thickness: 1,
+              width: 3,
+            },
+            text: peaks.map(({ name }) => placeName(name)),
+            marker: {
+              size: 7,
+              color: look.card,
+              line: {
+                width: 1.5,
+                color: peaks.map(({ shear }) => (limit && shear > limit.shear ? look.alarm : look.ink)),
+              },
+            },
+            hovertemplate: 'peak in %{text}: %{y:.4g}%{customdata}<extra></extra>',
           },
         ]}
       />
@@ -133,18 +167,31 @@ function TargetPlot() {
         title="Off target"
         across=""
         up="%"
-        says={names.map((name, i) => `${name} ${off[i]?.toFixed(2) ?? 'not known'} %`).join(', ')}
+        says={names
+          .map(
+            (name, i) => `${name} ${off[i]?.toFixed(2) ?? 'not known'} %${plusMinus(shownTargets[i]!.band)}`,
+          )
+          .join(', ')}
         limits={[
-          { at: within, says: 'allowed' },
-          { at: -within, says: '' },
+          { at: within, says: 'allowed', missed: targets.some((target) => !target.met) },
+          { at: -within, says: '', missed: targets.some((target) => !target.met) },
         ]}
         data={[
           {
             type: 'bar',
             x: names,
             y: off,
+            customdata: shownTargets.map(({ band }) => plusMinus(band)),
+            error_y: {
+              type: 'data',
+              array: shownTargets.map(({ got, wanted, band }) => (100 * (got ?? 0) * (band ?? 0)) / wanted),
+              color: look.soft,
+              thickness: 1,
+              width: 3,
+            },
+            width: 0.5,
             marker: { color: shownTargets.map((target) => (target.met ? look.ink : look.alarm)) },
-            hovertemplate: '%{x}: %{y:.3g} %<extra></extra>',
+            hovertemplate: '%{x}: %{y:.3g} %%{customdata}<extra></extra>',
           },
         ]}
       />

@@ -7,12 +7,12 @@ import { ChoiceField } from '../card/text-field.tsx';
 import { toEdit } from '../edits/to-edit.ts';
 import { palette } from '../look/theme.ts';
 import { usePage } from '../page/context.tsx';
-import type { Outcome } from '../solving/messages.ts';
 import { useStore } from '../state/store.ts';
 import type { Alteration } from '../tools/tool.ts';
-import { unitFor } from '../words/figure.ts';
+import { figure, unitFor } from '../words/figure.ts';
 import { Plot } from './plot.tsx';
-import { answersOf } from './sweep-answers.ts';
+import { allAnswers, answersOf, type Swept } from './sweep-answers.ts';
+import { AnswersStrip } from './sweep-strip.tsx';
 
 const STEPS = 25;
 
@@ -93,7 +93,7 @@ export function SweepPlots() {
   const all = useMemo(() => handles(chip, selection), [chip, selection]);
   const [id, setId] = useState('');
   const [range, setRange] = useState<readonly [number, number] | null>(null);
-  const [points, setPoints] = useState<readonly { readonly x: number; readonly outcome: Outcome }[]>([]);
+  const [points, setPoints] = useState<readonly Swept[]>([]);
   const stop = useRef<() => void>(() => undefined);
   useEffect(() => () => stop.current(), []);
   const handle = all.find((found) => found.id === id) ?? all[0];
@@ -103,9 +103,12 @@ export function SweepPlots() {
     stop.current();
     setPoints([]);
     const xs = Array.from({ length: STEPS }, (_, i) => from + ((to - from) * i) / (STEPS - 1));
-    stop.current = desk.solver.sweep(
-      xs.map((x) => toEdit(chip, handle.at(x))),
-      (index, outcome) => setPoints((before) => [...before, { x: xs[index]!, outcome }]),
+    const edits = xs.map((x) => toEdit(chip, handle.at(x)));
+    stop.current = desk.solver.sweep(edits, (index, outcome) =>
+      setPoints((before) => [
+        ...before,
+        { x: xs[index]!, outcome, answers: allAnswers(chip, edits[index]!, outcome) },
+      ]),
     );
   };
   const unit = unitFor(Math.max(Math.abs(from), Math.abs(to)), handle.kind);
@@ -160,6 +163,14 @@ export function SweepPlots() {
           </p>
         )}
       </div>
+      {points.length > 1 && (
+        <AnswersStrip
+          points={points}
+          from={from}
+          to={to}
+          says={(value) => figure(value, handle.kind, { unit, digits: 3 })}
+        />
+      )}
       {points.length > 1 &&
         plots.map(({ title, pick, kind, limit }) => {
           const values = answers.map((answer) => answer[pick]);
@@ -173,7 +184,11 @@ export function SweepPlots() {
               across={across}
               up={unitInPrint(own)}
               says={`${title} from ${inUnit(known[0]!, own).toPrecision(3)} to ${inUnit(known.at(-1)!, own).toPrecision(3)} ${unitInPrint(own)}`}
-              limits={limit === null ? [] : [{ at: inUnit(limit, own), says: 'limit' }]}
+              limits={
+                limit === null
+                  ? []
+                  : [{ at: inUnit(limit, own), says: 'limit', missed: known.some((value) => value > limit) }]
+              }
               data={[
                 {
                   type: 'scatter',
@@ -182,6 +197,13 @@ export function SweepPlots() {
                   y: values.map((value) => (value === null ? null : inUnit(value, own))),
                   line: { color: look.ink, width: 1.5 },
                   marker: { size: 4 },
+                  error_y: {
+                    type: 'data',
+                    array: answers.map((answer) => inUnit(answer.bands?.[pick] ?? 0, own)),
+                    color: look.soft,
+                    thickness: 1,
+                    width: 2,
+                  },
                   hovertemplate: '%{x:.4g}: %{y:.4g}<extra></extra>',
                 },
               ]}

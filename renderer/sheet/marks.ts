@@ -166,40 +166,54 @@ export function drawPlaceWords(
     ctx.beginPath();
     ctx.arc(at[0], at[1], 11, 0, 2 * Math.PI);
     ctx.stroke();
-    const short = clip(head, 44);
-    const rest = clip(more, 64);
+    const heads = linesOf(head, 40);
+    const rests = linesOf(more, 60);
+    const widest = (lines: readonly string[]): number =>
+      lines.reduce((most, line) => Math.max(most, ctx.measureText(line).width), 0);
     ctx.font = `600 ${SIZES.verdict}px ${TEXT_FACE}`;
-    const headWide = ctx.measureText(short).width;
+    const headWide = widest(heads);
     ctx.font = `${SIZES.label}px ${FIGURE_FACE}`;
-    const wide = Math.max(headWide, ctx.measureText(rest).width);
-    const place = roomBeside(at, wide, 36, size, room, edge, covered);
+    const wide = Math.max(headWide, widest(rests));
+    const high = 18 * heads.length + 16 * rests.length + 2;
+    const place = roomBeside(at, wide, high, size, room, edge, covered);
     if (!place) continue;
-    if (Math.min(Math.abs(place.top + 36 - at[1]), Math.abs(place.top - at[1])) > 20) {
+    if (Math.min(Math.abs(place.top + high - at[1]), Math.abs(place.top - at[1])) > 20) {
       ctx.lineWidth = 1;
       ctx.beginPath();
       ctx.moveTo(at[0], at[1] + (place.top > at[1] ? 11 : -11));
-      ctx.lineTo(place.right ? place.left + wide + 6 : place.left - 6, place.top + 18);
+      ctx.lineTo(place.right ? place.left + wide + 6 : place.left - 6, place.top + high / 2);
       ctx.stroke();
     }
     // a ground under the words, so that channels do not run through them
     ctx.globalAlpha = 0.86;
     ctx.fillStyle = palette.chip;
-    ctx.fillRect(place.left - 4, place.top - 2, wide + 8, 40);
+    ctx.fillRect(place.left - 4, place.top - 2, wide + 8, high + 4);
     ctx.globalAlpha = 1;
     ctx.textAlign = place.right ? 'right' : 'left';
     const x = place.right ? place.left + wide : place.left;
     ctx.textBaseline = 'middle';
     ctx.font = `600 ${SIZES.verdict}px ${TEXT_FACE}`;
     ctx.fillStyle = colour;
-    ctx.fillText(short, x, place.top + 10);
+    for (const [i, line] of heads.entries()) ctx.fillText(line, x, place.top + 10 + 18 * i);
     ctx.font = `${SIZES.label}px ${FIGURE_FACE}`;
     ctx.fillStyle = palette.soft;
-    ctx.fillText(rest, x, place.top + 27);
+    for (const [i, line] of rests.entries())
+      ctx.fillText(line, x, place.top + 18 * heads.length + 9 + 16 * i);
   }
 }
 
-const clip = (text: string, most: number): string =>
-  text.length > most ? `${text.slice(0, most - 1)}…` : text;
+/** A sentence in lines of about `most` signs, three at the most; the card has the whole of it. */
+export function linesOf(text: string, most: number): readonly string[] {
+  const lines: string[] = [];
+  for (const word of text.split(' ')) {
+    const last = lines.at(-1);
+    if (last !== undefined && last.length + 1 + word.length <= most)
+      lines[lines.length - 1] = `${last} ${word}`;
+    else if (lines.length < 3) lines.push(word);
+    else return [...lines.slice(0, 2), `${lines[2]} …`];
+  }
+  return lines;
+}
 
 /** px: how far the words may stand from their place; beyond the first a line leads to them. */
 const FAR = [0, 34, 72] as const;

@@ -17,7 +17,8 @@ export interface PortWords {
 }
 
 /** What a person gave has as many digits as they gave it. */
-const asGiven = (value: number, kind: Kind): string => typed(value, kind, unitFor(value, kind));
+const asGiven = (value: number, kind: Kind): string =>
+  typed(value, kind, unitFor(value, kind)).replace('-', '−');
 
 export function driveText(drive: Drive): string {
   switch (drive.kind) {

@@ -59,10 +59,15 @@ export const strong = (figure: string): Run => ({ strong: figure });
 export const plainText = (runs: readonly Run[]): string =>
   runs.map((run) => (typeof run === 'string' ? run : run.strong)).join('');
 
+/** The question that stands first. */
+export const FIRST = 'Does it split right?';
+
 /** The answer while there is no result. */
 export function unsolved(question: string, { chip, trouble }: Evidence): Answer {
   const empty = chip.channels.length === 0 && chip.chambers.length === 0;
-  const says = empty ? 'Nothing is drawn yet.' : trouble ? `Not known: ${trouble}` : 'Not solved yet.';
+  // the reason is told once, at the question that the flow itself answers
+  const why = question === FIRST ? `Not known: ${trouble}` : 'Not known either, for the same reason.';
+  const says = empty ? 'Nothing is drawn yet.' : trouble ? why : 'Not solved yet.';
   return { question, standing: 'unknown', says: [says], margin: null, culprit: null };
 }
 

@@ -2,9 +2,18 @@ import type { TargetResult } from '../../solver/chip/result.ts';
 import type { Ref } from '../state/ref.ts';
 import { plusMinus } from '../words/band.ts';
 import { count, counted, figure } from '../words/figure.ts';
-import { type Answer, type Evidence, type Margin, placeName, type Run, strong, unsolved } from './answer.ts';
+import {
+  type Answer,
+  type Evidence,
+  FIRST,
+  type Margin,
+  placeName,
+  type Run,
+  strong,
+  unsolved,
+} from './answer.ts';
 
-const QUESTION = 'Does it split right?';
+const QUESTION = FIRST;
 
 const nameOf = (target: TargetResult): string =>
   target.port === undefined ? (target.channel ?? '') : placeName(`port:${target.port}`);
