@@ -42,34 +42,53 @@ async function newest(path: string): Promise<number> {
   return latest;
 }
 
-/** Builds what is older than its sources. Returns its folder. */
+/** ms between two looks at a build that another start has begun, and after which it is waited for no longer. */
+const LOOK_MS = 500;
+const LONGEST_MS = 180_000;
+
+/** Builds what is older than its sources, or waits for another start that does. Returns its folder. */
 export async function built(root: string, made: Made, says: (line: string) => void): Promise<string> {
   const folder = join(root, made.folder);
-  const when = await newest(join(folder, made.mark));
-  if (when > 0) {
-    const times = await Promise.all(made.sources.map((source) => newest(join(root, source))));
-    if (Math.max(...times) < when) return folder;
+  for (let waited = 0; !(await isFresh(root, made)); waited += LOOK_MS) {
+    if (waited === 0) says(`Building the ${made.what} …`);
+    const outcome = await build(root, made);
+    if (outcome === 'done') break;
+    if (outcome === 'failed' || waited >= LONGEST_MS)
+      throw new Problem(
+        'output',
+        `The ${made.what} could not be built.`,
+        made.settings,
+        'See the messages above; "npm ci" may help.',
+      );
+    await new Promise((done) => setTimeout(done, LOOK_MS));
   }
-  says(`Building the ${made.what} …`);
-  await build(root, made);
   return folder;
 }
 
-function build(root: string, made: Made): Promise<void> {
+async function isFresh(root: string, made: Made): Promise<boolean> {
+  const when = await newest(join(root, made.folder, made.mark));
+  if (when === 0) return false;
+  const times = await Promise.all(made.sources.map((source) => newest(join(root, source))));
+  return Math.max(...times) < when;
+}
+
+/** What the bundler says where another build of the same program is under way: two starts at once. */
+const BUSY = /another Vite build process/i;
+
+function build(root: string, made: Made): Promise<'done' | 'busy' | 'failed'> {
   const vite = join(root, 'node_modules', 'vite', 'bin', 'vite.js');
   const args = [vite, 'build', '--config', join(root, made.settings), '--logLevel', 'error'];
-  return new Promise((done, fail) => {
-    const child = spawn(process.execPath, args, { cwd: root, stdio: ['ignore', 'ignore', 'inherit'] });
-    const failed = (): void =>
-      fail(
-        new Problem(
-          'output',
-          `The ${made.what} could not be built.`,
-          made.settings,
-          'See the messages above; "npm ci" may help.',
-        ),
-      );
-    child.on('error', failed);
-    child.on('exit', (code) => (code === 0 ? done() : failed()));
+  return new Promise((done) => {
+    const child = spawn(process.execPath, args, { cwd: root, stdio: ['ignore', 'ignore', 'pipe'] });
+    let said = '';
+    child.stderr.on('data', (chunk: Buffer) => {
+      said += chunk.toString();
+    });
+    child.on('error', () => done('failed'));
+    child.on('close', (code) => {
+      const outcome = code === 0 ? 'done' : BUSY.test(said) ? 'busy' : 'failed';
+      if (outcome !== 'busy') process.stderr.write(said);
+      done(outcome);
+    });
   });
 }
