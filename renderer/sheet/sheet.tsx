@@ -1,4 +1,4 @@
-import { useEffect, useRef } from 'react';
+import { useEffect, useLayoutEffect, useRef } from 'react';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import type { ToolEvent } from '../tools/tool.ts';
@@ -28,7 +28,8 @@ export function Sheet() {
   const tool = useStore(desk.view, (view) => view.tool);
   const name = useStore(desk.project)!.document.chip.name;
 
-  useEffect(() => {
+  // before the first paint, so that it is of the chip
+  useLayoutEffect(() => {
     const element = box.current!;
     const measure = (): void => {
       const { clientWidth: width, clientHeight: height } = element;

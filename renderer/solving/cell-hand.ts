@@ -6,6 +6,8 @@ import type { CellHand, Found } from './thread.ts';
 
 /** Threads beside the solving thread and the page's own. */
 const THREADS = Math.max(1, Math.min(4, navigator.hardwareConcurrency - 1));
+/** ms until they start where no junction was asked for: the page and the first answer come before. */
+const START_MS = 2500;
 
 interface Job {
   readonly cell: CellSpec;
@@ -52,7 +54,7 @@ export function cellHand(start: StartWorker = cellWorker, threads = THREADS): Ce
       bench.worker.postMessage(order);
     }
   };
-  for (let i = 0; i < threads; i += 1) {
+  const addBench = (): void => {
     const bench: Bench = { worker: start(), begun: new Map() };
     bench.worker.addEventListener('message', ({ data }: MessageEvent<CellNews>) => {
       const job = bench.begun.get(data.id);
@@ -65,9 +67,14 @@ export function cellHand(start: StartWorker = cellWorker, threads = THREADS): Ce
       next();
     });
     benches.push(bench);
-  }
+  };
+  const begin = (): void => {
+    while (benches.length < threads) addBench();
+  };
+  setTimeout(begin, START_MS);
   return {
     solve(cells, accuracy, ahead = false) {
+      if (cells.length > 0) begin();
       const wanted = new Set(cells);
       const under = new Set<CellSpec>();
       for (const { worker, begun } of benches)

@@ -45,4 +45,7 @@ scope.addEventListener('message', ({ data }) => {
   if (!going) goOn();
 });
 
-warmUp();
+// what waits already is exercise enough
+later(() => {
+  if (!going) warmUp();
+});

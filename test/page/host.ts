@@ -11,12 +11,16 @@ export interface Host {
   readonly origin: string;
   /** A folder of its own for drafts and preferences. */
   readonly data: string;
+  readonly pid: number;
+  /** ms from the start of the process until the address was told. */
+  readonly startedIn: number;
   stop(): Promise<void>;
 }
 
 /** `npm start` as a person has it, in a fresh data folder, on a free port; the page is built where it must be. */
 export async function startHost(files: readonly string[] = []): Promise<Host> {
   const data = mkdtempSync(join(tmpdir(), 'channelwright-page-'));
+  const began = performance.now();
   const child: ChildProcess = spawn(
     process.execPath,
     [join(ROOT, 'main/start.js'), '--no-open', '--idle', '10', ...files],
@@ -50,8 +54,11 @@ export async function startHost(files: readonly string[] = []): Promise<Host> {
       fail(new Error(`The host ended with ${code}: ${said}`));
     });
   });
+  const startedIn = performance.now() - began;
   return {
     address,
+    pid: child.pid!,
+    startedIn,
     origin: new URL(address).origin,
     data,
     stop: async () => {

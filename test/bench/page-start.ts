@@ -1,0 +1,160 @@
+import { readFileSync, writeFileSync } from 'node:fs';
+import { join, resolve } from 'node:path';
+import { gzipSync } from 'node:zlib';
+import type { Page } from 'playwright-core';
+import { type Sitting, sit } from '../page/desk.ts';
+import type { BenchRow } from './row.ts';
+
+/** How the program starts with a file, and what it holds in memory. */
+
+const DIST = resolve(import.meta.dirname, '../../dist/renderer');
+
+const median = (values: readonly number[]): number =>
+  [...values].sort((a, b) => a - b)[Math.floor(values.length / 2)] ?? Number.NaN;
+
+/** ms from navigation until something is so in the page, as the page counts. */
+const until = (page: Page, what: 'drawn' | 'answered' | 'solved'): Promise<number> =>
+  page.evaluate(
+    (wanted) =>
+      new Promise<number>((done) => {
+        const so = (): boolean => {
+          if (!document.querySelector('.sheet canvas') || !document.querySelector('.grid-row')) return false;
+          if (wanted === 'drawn') return true;
+          const bar = document.querySelector('.verdicts');
+          if (!bar || bar.textContent?.includes('Not solved yet')) return false;
+          return wanted === 'answered' || bar.getAttribute('aria-busy') === 'false';
+        };
+        const look = (): void => {
+          if (so()) done(performance.now());
+          else requestAnimationFrame(look);
+        };
+        look();
+      }),
+    what,
+  );
+
+/** @param description of a chip of 1000 channels */
+export async function starting(folder: string, description: string): Promise<BenchRow[]> {
+  const file = join(folder, 'start-1000.json');
+  writeFileSync(file, description);
+  const host: number[] = [];
+  const drawn: number[] = [];
+  const usable: number[] = [];
+  const solved: number[] = [];
+  // the first start compiles what the others find compiled
+  await (await sit({ files: [file] })).end();
+  for (let i = 0; i < 3; i += 1) {
+    const sitting = await sit({ files: [file] });
+    host.push(sitting.host.startedIn);
+    const all = await Promise.all(
+      (['drawn', 'answered', 'solved'] as const).map((what) => until(sitting.page, what)),
+    );
+    drawn.push(all[0]!);
+    usable.push(all[1]!);
+    solved.push(all[2]!);
+    await sitting.end();
+  }
+  // what the page is begun with: the first script and the part it brings in at once
+  const html = readFileSync(join(DIST, 'index.html'), 'utf8');
+  const first = [...html.matchAll(/(?:src|href)="\.\/(assets\/[^"]+\.js)"/g)].map((found) => found[1]!);
+  const files = new Set(first);
+  for (const name of files) {
+    const text = readFileSync(join(DIST, name), 'utf8');
+    for (const [, part] of text.matchAll(/(?:from|import)\s*\(?\s*["'`]\.\/([\w.-]+\.js)["'`]/g))
+      if (first.includes(name) || !part!.startsWith('plots')) files.add(`assets/${part}`);
+  }
+  const bytes = [...files].reduce((sum, name) => sum + gzipSync(readFileSync(join(DIST, name))).length, 0);
+  const row = (what: string, times: readonly number[], target?: number): BenchRow => ({
+    what,
+    median: median(times),
+    unit: 'ms',
+    runs: times.length,
+    ...(target !== undefined && { target }),
+  });
+  return [
+    row('start, 1000 channels: process to host listening', host),
+    row('  navigation to the sheet drawn', drawn),
+    {
+      ...row('  navigation to usable: sheet drawn, first answer in the verdicts', usable, 1500),
+      note: 'at most, because the look comes after loading',
+    },
+    row('  navigation to all junctions solved', solved),
+    {
+      what: 'all scripts the page begins with, gzipped',
+      median: bytes / 1e3,
+      unit: 'kB',
+      runs: 1,
+      target: 600,
+    },
+  ];
+}
+
+/** MB of a process, what it shares with others counted in parts; NaN where there is no /proc to tell. */
+function held(pid: number): number {
+  try {
+    const shared = /^Pss:\s+(\d+) kB/m.exec(readFileSync(`/proc/${pid}/smaps_rollup`, 'utf8'));
+    return Number(shared?.[1]) / 1e3;
+  } catch {
+    return Number.NaN;
+  }
+}
+
+/** MB that the page's process holds: the page, its solving thread and its junction threads. */
+async function pageHeld(sitting: Sitting): Promise<number> {
+  const cdp = await sitting.context.browser()!.newBrowserCDPSession();
+  const { processInfo } = await cdp.send('SystemInfo.getProcessInfo');
+  const renderers = processInfo.filter(({ type }) => type === 'renderer').map(({ id }) => held(id));
+  return Math.max(...renderers.filter(Number.isFinite));
+}
+
+/** MB of what scripts hold in the page and in each of its threads, as it stands: garbage is not collected for it. */
+async function heaps(sitting: Sitting): Promise<readonly (readonly [name: string, mb: number])[]> {
+  const cdp = await sitting.context.newCDPSession(sitting.page);
+  const mb = ({ usedSize, backingStorageSize }: { usedSize: number; backingStorageSize?: number }): number =>
+    (usedSize + (backingStorageSize ?? 0)) / 1e6;
+  const found: [string, number][] = [['the page', mb(await cdp.send('Runtime.getHeapUsage'))]];
+  const threads: { readonly session: string; readonly name: string }[] = [];
+  cdp.on('Target.attachedToTarget', ({ sessionId, targetInfo }) => {
+    threads.push({ session: sessionId, name: `thread "${targetInfo.title}"` });
+  });
+  const answers = new Map<string, (answer: string) => void>();
+  cdp.on('Target.receivedMessageFromTarget', ({ sessionId, message }) => answers.get(sessionId)?.(message));
+  const attach = { autoAttach: true, waitForDebuggerOnStart: false, flatten: false };
+  await cdp.send('Target.setAutoAttach', attach);
+  await sitting.page.waitForTimeout(300);
+  for (const { session, name } of threads) {
+    const answer = await new Promise<string>((done) => {
+      answers.set(session, done);
+      const message = JSON.stringify({ id: 1, method: 'Runtime.getHeapUsage' });
+      void cdp.send('Target.sendMessageToTarget', { sessionId: session, message });
+      setTimeout(() => done('{}'), 5000);
+    });
+    const { result } = JSON.parse(answer) as { result?: { usedSize: number; backingStorageSize?: number } };
+    found.push([name, result ? mb(result) : Number.NaN]);
+  }
+  await cdp.detach();
+  return found;
+}
+
+/** s after which the browser has cleared up by itself. */
+const REST = 25;
+
+/** What the page's process and its host hold, right away and when the browser has cleared up. */
+export async function memory(sitting: Sitting, what: string): Promise<BenchRow[]> {
+  const row = (name: string, median: number, target?: number): BenchRow => ({
+    what: name,
+    median,
+    unit: 'MB',
+    runs: 1,
+    ...(target !== undefined && { target }),
+  });
+  const now = await pageHeld(sitting);
+  await sitting.page.waitForTimeout(1000 * REST);
+  const rest = await pageHeld(sitting);
+  return [
+    row(`memory of the page's process, ${what}`, now, 400),
+    row(`  at rest, ${REST} s later`, rest, 400),
+    ...(await heaps(sitting)).map(([name, mb]) => row(`    of it scripts of ${name}`, mb)),
+    row('  the host beside it', held(sitting.host.pid)),
+  ];
+}
