@@ -1,4 +1,4 @@
-import type { CellSolution } from './cell.ts';
+import type { CellFields, CellSolution } from './cell.ts';
 import { depthValues } from './depth.ts';
 import { type FlowField, flowField } from './flow-field.ts';
 import { emptySample, sampleAt } from './sample.ts';
@@ -31,7 +31,7 @@ export function inertiaShare(
 ): number | null {
   let tensor = tensors.get(solution);
   if (tensor === undefined) {
-    tensor = tensorOf(solution);
+    tensor = sharedTensor(solution);
     tensors.set(solution, tensor);
   }
   if (!tensor) return null;
@@ -60,6 +60,27 @@ export function inertiaShare(
   }
   const share = (density * depth ** 2) / viscosity ** 2;
   return largest > 0 ? (share * Math.max(most, Math.abs(last))) / largest : 0;
+}
+
+/** By solved copy, then by the order of its faces: copies of one junction in a chip have it in common. */
+const shared = new WeakMap<CellFields, Map<string, Float64Array | null>>();
+
+function sharedTensor(solution: CellSolution): Float64Array | null {
+  const { fields, holes, placements } = solution;
+  // beyond a hole the pressures are not those on the faces of the solved copy
+  if (!fields || holes.some((r) => r > 0)) return tensorOf(solution);
+  let known = shared.get(fields);
+  if (!known) {
+    known = new Map();
+    shared.set(fields, known);
+  }
+  const key = placements[0].face.join(' ');
+  let tensor = known.get(key);
+  if (tensor === undefined) {
+    tensor = tensorOf(solution);
+    known.set(key, tensor);
+  }
+  return tensor;
 }
 
 /** patterns x patterns x patterns: minus the integral of (u_j . grad u_k) . u_f; null where fields were not kept. */

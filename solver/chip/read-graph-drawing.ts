@@ -12,6 +12,9 @@ export function layerNumbers(chip: Chip): Map<string, number> {
   return new Map(chip.layers.map((layer, i) => [layer.id, i]));
 }
 
+/** Elements of a drawing whose bodies are kept, being asked for again and again; more would take too much memory. */
+const MOST_BODIES = 4000;
+
 /** The channels of a chip in the plan, with an index over what their elements cover. */
 export class Drawing {
   readonly chip: Chip;
@@ -22,6 +25,7 @@ export class Drawing {
   readonly boxes: Float64Array;
   /** Over the boxes; absent where there are none. */
   readonly index: Flatbush | undefined;
+  readonly #bodies: Body[] = [];
   readonly #p = new Float64Array(CORNERS);
   readonly #q = new Float64Array(CORNERS);
 
@@ -60,6 +64,12 @@ export class Drawing {
   }
 
   body(id: number): Body {
+    if (this.elements.count > MOST_BODIES) return this.#body(id);
+    this.#bodies[id] ??= this.#body(id);
+    return this.#bodies[id];
+  }
+
+  #body(id: number): Body {
     const b = this.boxes;
     const element = this.elements.at(id);
     return {

@@ -1,3 +1,4 @@
+import type { CellSolution } from '../cell/cell.ts';
 import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
 import type { Fluid } from '../fluid/fluid.ts';
@@ -56,7 +57,7 @@ export function lump(chip: Chip, graph: Graph, layout: Layout, fluid: Fluid, mem
     blocks.push({
       nodes: Int32Array.from(spec.faces, (face) => face.node),
       // The shape is in metres and was solved with viscosity 1.
-      matrix: solution.portMatrix.map((entry) => entry / viscosity),
+      matrix: matrixOf(solution, viscosity),
     });
   });
   const drives: Drive[] = [];
@@ -101,6 +102,18 @@ export function lump(chip: Chip, graph: Graph, layout: Layout, fluid: Fluid, mem
     viscosity,
     portDrive,
   };
+}
+
+const matrices = new WeakMap<CellSolution, { readonly viscosity: number; readonly matrix: Float64Array }>();
+
+/** A cell's port matrix for a viscosity, made once while the fluid stays as it is; never changed. */
+function matrixOf(solution: CellSolution, viscosity: number): Float64Array {
+  let known = matrices.get(solution);
+  if (known?.viscosity !== viscosity) {
+    known = { viscosity, matrix: solution.portMatrix.map((entry) => entry / viscosity) };
+    matrices.set(solution, known);
+  }
+  return known.matrix;
 }
 
 const CIRCLE: Profile = { kind: 'circle' };

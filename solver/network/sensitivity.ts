@@ -1,4 +1,5 @@
 import { solve } from '../sparse/solve.ts';
+import type { Edges } from './edges.ts';
 import type { PreparedNetwork } from './prepare.ts';
 import type { NetworkSolution, NetworkSpec } from './spec.ts';
 
@@ -41,6 +42,7 @@ export function gradients(
   const { edges, unknown, nodeOf, conductance, factor } = network;
   const { from, to, driveNode } = edges;
   const n = nodeOf.length;
+  const touching = edgesAt(edges);
   const weights = targets.map(() => new Float64Array(edges.nodes));
   const right = new Float64Array(n * targets.length);
   targets.forEach(({ of, index }, t) => {
@@ -60,7 +62,7 @@ export function gradients(
     if (spec.drives[index].kind === 'flow') return;
     const at = driveNode[index];
     weights[t][at] = -1;
-    for (let e = 0; e < from.length; e += 1) {
+    for (const e of touching(at)) {
       if (from[e] === to[e]) continue;
       if (from[e] === at) add(to[e], -conductance[e]);
       if (to[e] === at) add(from[e], -conductance[e]);
@@ -90,6 +92,29 @@ export function gradients(
       },
     };
   });
+}
+
+/** Edges that end at a node, in order; found for all nodes when first asked for. */
+function edgesAt({ from, to, nodes }: Edges): (node: number) => Int32Array {
+  let start: Int32Array | null = null;
+  let edge = new Int32Array(0);
+  return (node) => {
+    if (!start) {
+      start = new Int32Array(nodes + 1);
+      edge = new Int32Array(2 * from.length);
+      for (let e = 0; e < from.length; e += 1) {
+        start[from[e] + 1] += 1;
+        if (to[e] !== from[e]) start[to[e] + 1] += 1;
+      }
+      for (let i = 0; i < nodes; i += 1) start[i + 1] += start[i];
+      const next = start.slice();
+      for (let e = 0; e < from.length; e += 1) {
+        edge[next[from[e]]++] = e;
+        if (to[e] !== from[e]) edge[next[to[e]]++] = e;
+      }
+    }
+    return edge.subarray(start[node], start[node + 1]);
+  };
 }
 
 function once<T>(make: () => T): () => T {

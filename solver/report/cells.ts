@@ -4,7 +4,7 @@ import type { Chip } from '../chip/chip.ts';
 import type { CellResult, PieceResult } from '../chip/result.ts';
 import type { PlacedCell } from '../lump/layout.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { depthOf, NANOMETRES } from '../lump/stretches.ts';
+import { NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
 import { patternPeak } from './cell-peaks.ts';
@@ -45,13 +45,25 @@ function cellResult(
   const peak = patternPeak(solution, pressures);
   return {
     ...base,
-    portMatrix: Array.from({ length: n }, (_, i) => Array.from(matrix.subarray(i * n, (i + 1) * n))),
+    portMatrix: rowsOf(matrix, n),
     peakWallShear: peak ? peak.value : null,
     peakAt: peak ? [base.at[0] + peak.at[0], base.at[1] + peak.at[1]] : null,
     accuracy: solution.flowError,
     pressures,
     ...(peak ? { peakError: peak.error } : {}),
   };
+}
+
+const rows = new WeakMap<Float64Array, readonly (readonly number[])[]>();
+
+/** A port matrix as a result has it, made once. */
+function rowsOf(matrix: Float64Array, n: number): readonly (readonly number[])[] {
+  let known = rows.get(matrix);
+  if (!known) {
+    known = Array.from({ length: n }, (_, i) => Array.from(matrix.subarray(i * n, (i + 1) * n)));
+    rows.set(matrix, known);
+  }
+  return known;
 }
 
 /** What goes on from each node: a piece ("feed#1"), else the port whose hole or end it is. */
@@ -102,7 +114,6 @@ const CREEPING = 0.05;
 /** The share by which inertia, which creeping flow leaves out, shifts the flow through each cell. */
 export function inertiaShares(
   lumped: Lumped,
-  chip: Chip,
   flow: NetworkSolution,
   pieces: readonly PieceResult[],
   density: number,
@@ -118,8 +129,7 @@ export function inertiaShares(
     const reynolds = Math.max(0, ...spec.faces.map((face) => fastest.get(face.node) ?? 0));
     if (!solution || reynolds < CREEPING) return 0;
     const pressures = spec.faces.map((face) => flow.pressure[face.node] || 0);
-    const depth = depthOf(chip, spec.layerIndex);
-    return inertiaShare(solution, pressures, depth, density, lumped.viscosity) ?? 0;
+    return inertiaShare(solution, pressures, spec.shape.depth, density, lumped.viscosity) ?? 0;
   });
 }
 

@@ -113,8 +113,11 @@ export function onRoute(limit: Limit, { from, to }: Route): boolean {
 function figuresOf(chip: Chip, net: ChipNet, diameters: readonly number[], laws: readonly LawLimit[]) {
   const { crossing, element } = net;
   const edges = crossing.length;
-  const of = (value: (e: number) => number): Float64Array =>
-    Float64Array.from({ length: edges }, (_, e) => value(e));
+  const of = (value: (e: number) => number): Float64Array => {
+    const out = new Float64Array(edges);
+    for (let e = 0; e < edges; e += 1) out[e] = value(e);
+    return out;
+  };
   const huggings = diameters.map((diameter) => crossing.map((how) => how.hugging(diameter)));
   const masks = laws.map((limit) => covers(limit, chip));
   const lawMost: number[] = [];

@@ -1,6 +1,7 @@
 import type { Graph } from '../../chip/graph.ts';
 import type { Drawing } from '../../chip/read-graph-drawing.ts';
 import { assemble, type Ground, type Part } from './assemble.ts';
+import type { SpanEnd } from './spans.ts';
 
 /** Forgotten all together beyond this many grounds. */
 const MOST = 20_000;
@@ -19,6 +20,9 @@ function numberOf(part: object): number {
   return number;
 }
 
+const endKey = (end: SpanEnd): string =>
+  end.kind === 'port' ? `p${end.s} ${end.site}` : `${end.kind === 'cut' ? 'c' : 'w'}${end.s}`;
+
 /**
  * As `assemble`, remembered: while one channel is edited, the grounds that it has no part in are made of
  * the same channels, cut at the same places, and need no new union.
@@ -32,7 +36,7 @@ export function assembleOnce(
   const { chip } = drawing;
   let key = `${numberOf(chip.layers[ground.layer]!)} ${origin[0]} ${origin[1]} ${ground.sites}`;
   for (const { channel, low, high } of ground.spans) {
-    key += `|${channel} ${numberOf(chip.channels[channel]!)} ${JSON.stringify(low)} ${JSON.stringify(high)}`;
+    key += `|${channel} ${numberOf(chip.channels[channel]!)} ${endKey(low)} ${endKey(high)}`;
   }
   for (const i of ground.chambers) key += `|c${i} ${numberOf(chip.chambers[i]!)}`;
   for (const { x, y, radius, site } of ground.holes) key += `|h${x} ${y} ${radius} ${site}`;
