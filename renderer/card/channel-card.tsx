@@ -47,7 +47,13 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
           width={Math.min(...channel.width)}
           flow={widest?.flow ?? null}
           viscosity={result?.fluid.viscosity ?? null}
-          shear={{ mean: widest?.meanWallShear ?? null, peak: widest?.peakWallShear ?? null }}
+          fluid={chip.fluid}
+          told={{
+            mean: widest?.meanWallShear ?? null,
+            peak: widest?.peakWallShear ?? null,
+            speed: widest?.peakVelocity ?? null,
+            uniform: !tapered && layer.roof === undefined,
+          }}
           most={ramp.to}
         />
       )}

@@ -37,7 +37,7 @@ export function perimeterCurve(
   return shape.symmetric ? mirrored(points) : closed(points);
 }
 
-interface Point {
+export interface Point {
   readonly at: Place;
   readonly shear: number;
 }
@@ -78,13 +78,14 @@ function ellipseHalf(width: number, depth: number): Point[] {
   });
 }
 
-function mirrored(half: readonly Point[]): PerimeterCurve {
+/** A symmetric section's right half, from the middle of its floor to that of its lid, and its image. */
+export function mirrored(half: readonly Point[]): PerimeterCurve {
   const image = half.slice(1, -1).map(({ at, shear }): Point => ({ at: [-at[0], at[1]], shear }));
   return closed([...half, ...image.reverse()]);
 }
 
 /** The first point again at the end, so that the curve closes. */
-function closed(points: readonly Point[]): PerimeterCurve {
+export function closed(points: readonly Point[]): PerimeterCurve {
   const round = [...points, points[0]];
   let along = 0;
   return {

@@ -3,10 +3,7 @@ import type { ShearModel } from '../../fluid/spec.ts';
 import { wallShear } from '../wall-shear.ts';
 import type { SectionElements } from './elements.ts';
 
-/**
- * Greatest wall shear stress of a solved flow, from the balance of forces at the wall (consistent
- * boundary flux, see `wallShear`): what the pressure gradient drives less what the fluid's stress holds.
- */
+/** Greatest wall shear stress of a solved flow. */
 export function peakWallStress(
   elements: SectionElements,
   model: ShearModel,
@@ -14,6 +11,27 @@ export function peakWallStress(
   smallest: number,
   velocity: Float64Array,
 ): number {
+  const still = new Uint8Array(elements.mesh.nodeCount);
+  const stress = wallStress(elements, model, gradient, smallest, velocity, still);
+  let peak = 0;
+  for (let i = 0; i < stress.length; i += 1) if (elements.wall[i]) peak = Math.max(peak, stress[i]);
+  return peak;
+}
+
+/**
+ * Wall shear stress of a solved flow at the nodes of the wall, from the balance of forces there (consistent
+ * boundary flux, see `wallShear`): what the pressure gradient drives less what the fluid's stress holds.
+ *
+ * @param still nodes where it is known to be zero (1): convex corners, of fluids without a yield stress
+ */
+export function wallStress(
+  elements: SectionElements,
+  model: ShearModel,
+  gradient: number,
+  smallest: number,
+  velocity: Float64Array,
+  still: Uint8Array,
+): Float64Array {
   const { mesh, table, load, wall, wallEdges } = elements;
   const { weight, gx, gy } = table;
   const { count } = table.rule;
@@ -35,8 +53,6 @@ export function peakWallStress(
     }
   }
   const stress = new Float64Array(mesh.nodeCount);
-  wallShear(mesh, wallEdges, force, new Uint8Array(mesh.nodeCount), stress);
-  let peak = 0;
-  for (let i = 0; i < stress.length; i += 1) if (wall[i]) peak = Math.max(peak, stress[i]);
-  return peak;
+  wallShear(mesh, wallEdges, force, still, stress);
+  return stress;
 }
