@@ -1,8 +1,10 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { clipText, paste } from '../edits/clip.ts';
-import { listOf } from '../edits/parts.ts';
+import { findParts, listOf } from '../edits/parts.ts';
 import { align, type Edge, join, mirror, remove, type Shaping, split, turn } from '../edits/shape.ts';
+import { nearestOnPath } from '../geometry/path.ts';
+import type { Xy } from '../geometry/vector.ts';
 import type { Desk } from '../state/desk.ts';
 import { PARTS, type Ref } from '../state/ref.ts';
 import type { Workbench } from '../state/workbench.ts';
@@ -24,6 +26,15 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
     else desk.alter(made);
   };
   const chosen = (): string | null => (free().length > 0 ? null : 'Choose a part first.');
+  /** The pointer's place, where it lies on the first channel that is chosen. */
+  const underPointer = (chip: Chip, refs: readonly Ref[]): Xy | undefined => {
+    const at = bench.pointer();
+    const scope = bench.scope();
+    const part = findParts(chip, refs).find((found) => found.kind === 'channel');
+    if (!at || !scope || part?.kind !== 'channel') return undefined;
+    const reach = scope.reach + Math.max(...part.value.width) / 2;
+    return nearestOnPath(at, part.value.path).away <= reach ? at : undefined;
+  };
   const open = (): string | null => (desk.chip() ? null : 'Open or begin a chip first.');
   const change = (
     id: string,
@@ -161,7 +172,13 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
         desk.say(lock ? 'Locked: neither moved nor deleted until unlocked.' : 'Unlocked.');
       },
     },
-    change('split', 'Split', ['k'], 'Cut the chosen channel in two in its middle.', split),
+    change(
+      'split',
+      'Split',
+      ['k'],
+      'Cut the chosen channel in two where the pointer is on it, else in its middle.',
+      (chip, refs) => split(chip, refs, underPointer(chip, refs)),
+    ),
     change('join', 'Join', ['j'], 'Make one channel of those chosen that meet end to end.', join),
     change('turn', 'Turn', ['q'], 'Turn the chosen parts by 90° about their middle.', (chip, refs) =>
       turn(chip, refs, 90),

@@ -1,4 +1,5 @@
 import type { Chip } from '../../solver/chip/chip.ts';
+import type { Xy } from '../geometry/vector.ts';
 import { gridFor } from '../tools/snap.ts';
 import type { Preview, Scope, ToolEvent, ToolName } from '../tools/tool.ts';
 import { type Hand, take } from '../tools/tools.ts';
@@ -16,12 +17,15 @@ export interface Workbench {
   preview(): Preview;
   event(event: ToolEvent): void;
   take(name: ToolName): void;
+  /** Where the pointer was last over the sheet, nm; null before it ever was. */
+  pointer(): Xy | null;
   /** Called when the card is wanted for typing. */
   onCard(listener: () => void): () => void;
 }
 
 export function createWorkbench(desk: Desk): Workbench {
   const hand = createStore<Hand | null>(null);
+  let pointer: Xy | null = null;
   const cardListeners = new Set<() => void>();
 
   const scope = (): Scope | null => {
@@ -53,6 +57,7 @@ export function createWorkbench(desk: Desk): Workbench {
     event(event) {
       const s = scope();
       if (!s) return;
+      if ('at' in event) pointer = event.at;
       const outcome = holding(s).on(event, s);
       const view = desk.view.get();
       desk.view.set({
@@ -74,6 +79,7 @@ export function createWorkbench(desk: Desk): Workbench {
       desk.view.patch({ tool: name, says: '' });
       hand.set(s ? take(name, s) : null);
     },
+    pointer: () => pointer,
     onCard(listener) {
       cardListeners.add(listener);
       return () => cardListeners.delete(listener);

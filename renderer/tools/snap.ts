@@ -135,9 +135,12 @@ function nearestRay(p: Xy, from: Xy, reach: number): { readonly unit: Xy; readon
   return best.along < 0 ? { unit: times(best.unit, -1), along: -best.along } : best;
 }
 
-/** A place as far from one port as that port is from the next, in a row or a column. */
+/** A place as far from one port or via as that is from the next, in a row or a column. */
 function equalSpacing(p: Xy, chip: Chip, wishes: SnapWishes): Snapped | null {
-  const places = chip.ports.filter((port) => !wishes.without?.has(`port:${port.id}`)).map((port) => port.at);
+  const places = [
+    ...chip.ports.filter((port) => !wishes.without?.has(`port:${port.id}`)),
+    ...chip.vias.filter((via) => !wishes.without?.has(`via:${via.id}`)),
+  ].map(({ at }) => at);
   if (places.length < 2 || places.length > 400) return null;
   for (const axis of [0, 1] as const) {
     const row = places
