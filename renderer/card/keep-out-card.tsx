@@ -36,7 +36,10 @@ export function KeepOutCard({ keepOut }: { readonly keepOut: KeepOut }) {
         )
       : 'A keep-out has a width and a height above zero.';
   const ids = found
-    .filter(({ kind, says }) => kind === 'keep-out' && says.includes(`the keep-out ${id}`))
+    .filter(
+      ({ kind, says }) =>
+        kind === 'keep-out' && [';', '.', ',', ' ('].some((end) => says.includes(`${id}${end}`)),
+    )
     .map(({ where }) => where.slice(where.indexOf(':') + 1));
   return (
     <>

@@ -18,11 +18,15 @@ export function remedyOf(
 ): Alteration {
   const { label, changes } = readEdit(remedy);
   const put: PartValue[] = [];
+  let set: Whole = {};
   let next = layers;
-  for (const change of changes as readonly Extract<Change, { kind: 'put' }>[]) {
-    if (change.list === 'layers') {
+  for (const change of changes as readonly Extract<Change, { kind: 'put' | 'set' }>[]) {
+    if (change.kind === 'set') {
+      set = { ...set, [change.key]: change.value };
+    } else if (change.list === 'layers') {
       next = next.map((layer) => (layer.id === change.id ? change.part : layer));
     } else put.push({ kind: KINDS[change.list], value: change.part } as PartValue);
   }
-  return { label, put, ...(next !== layers && { set: { layers: next } }) };
+  if (next !== layers) set = { ...set, layers: next };
+  return { label, put, ...(Object.keys(set).length > 0 && { set }) };
 }

@@ -66,9 +66,9 @@ test('flow, share and running wall shear are those of the chip as it would be', 
   const last = answer.result!.channels.find((found) => found.id === partId(teeChip(), part))!.pieces.at(-1)!;
   expect(last.flow).toBeGreaterThan(0);
   expect(lines.get('flow')).toBe(
-    `${(last.flow! * 6e10).toPrecision(3)} µL/min, ${((last.flow! / (1e-8 / 60)) * 100).toPrecision(3)} %`,
+    `${(last.flow! * 6e10).toPrecision(3)} µL/min, ${((last.flow! / (1e-8 / 60)) * 100).toPrecision(3)} % ± ${(100 * last.band!.share).toPrecision(2)} %`,
   );
-  expect(lines.get('wall shear')).toMatch(/ m?Pa$/);
+  expect(lines.get('wall shear')).toMatch(/ m?Pa ± [\d.]+ %$/);
   expect(lines.has('wall shear at 1 µL/min')).toBe(false);
 });
 

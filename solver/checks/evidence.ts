@@ -34,6 +34,8 @@ export interface CellEvidence {
   readonly upright: number;
   /** What comes of it for the peak; null where none can be given. */
   readonly uprightPeak: number | null;
+  /** By how much resistances of its channels may differ from what its one depth makes of them; 0 where they share it. */
+  readonly depths: number;
 }
 
 /** What the checks are made from: the chip, how the fluid reads it, and what was solved. */

@@ -2,6 +2,7 @@ import Flatbush from 'flatbush';
 import type { Port } from '../chip/chip.ts';
 import type { Drawn } from './evidence.ts';
 import type { Gathered } from './gather.ts';
+import { larger } from './outline.ts';
 import { length, METRE, placeOf } from './words.ts';
 
 /** nm: the grid and the margin of the interface guideline named in `kinds.ts`. */
@@ -104,6 +105,7 @@ function interfaces({ chip }: Drawn, found: Gathered): void {
         do: `Move it ${length(MARGIN - side)} inward.`,
         value: side / METRE,
         threshold: MARGIN / METRE,
+        ...larger(chip, [x, y, chip.outline.width - x, chip.outline.height - y], MARGIN),
         off: MARGIN / Math.max(1, side),
       });
     }

@@ -39,7 +39,7 @@ export function checkKeepOuts({ chip, rules }: Drawn, found: Gathered): void {
 }
 
 const named = ({ id, note }: KeepOut): string =>
-  `the keep-out ${id}${note === undefined ? '' : ` (${note.replace(/\s+/g, ' ').slice(0, 60)})`}`;
+  `${id.startsWith('keep-out') ? id : `the keep-out ${id}`}${note === undefined ? '' : ` (${note.replace(/\s+/g, ' ').slice(0, 60)})`}`;
 
 /** The channel narrowed alike over its length, so that each of its sides moves in by `lack` nm. */
 function narrower(chip: Chip, id: string, lack: Near['distance']): Channel | null {

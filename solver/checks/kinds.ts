@@ -211,10 +211,19 @@ export const FINDING_KINDS = {
     of: 'trust',
     title: 'Junction solved with upright walls',
     formula:
-      '0.003 + 0.03 × how far a side wall leans over the narrowest width, and what is left between arms of different widths; twice that for profiles that were not measured; of the peak 0.05 + 2.5 × (lean / width)², and what its faces differ by',
+      '0.003 + 0.03 × how far a side wall leans over the narrowest width, and what is left between arms of different widths; twice that for profiles that were not measured; of the peak 0.03 + lean / width, at most 0.18, and what its faces differ by',
     threshold: '0.01',
     source:
       'solves in tetrahedra of bends and tees with leaning and etched walls; threshold common practice, no source',
+  },
+  'mixed-depths': {
+    of: 'trust',
+    title: 'Channels of different depths meet',
+    formula:
+      'largest of (h/h′)³ − 1 and (h′/h)³ − 1, h the depth that the junction is solved at, h′ that of a channel in it',
+    threshold: '0.01',
+    source:
+      'resistance of a shallow channel goes with the cube of its depth; threshold common practice, no source',
   },
   temperature: {
     of: 'trust',

@@ -1,5 +1,9 @@
 import Flatbush from 'flatbush';
-import type { Chamber, Point } from '../chip/chip.ts';
+import type { Chamber, Chip, Point } from '../chip/chip.ts';
+import { type Area, cuts, inArea } from '../chip/geometry/area.ts';
+import { line, pointAt } from '../chip/geometry/curve.ts';
+import { elementSolid, otherSolids, type Solid } from '../chip/plan-gaps.ts';
+import { drawingOf } from '../chip/read-graph-drawing.ts';
 import type { Drawn } from './evidence.ts';
 import type { Gathered } from './gather.ts';
 import { length, METRE, placeOf } from './words.ts';
@@ -21,7 +25,9 @@ export function checkNecks({ chip, rules }: Drawn, found: Gathered): void {
   const least = rules?.leastWidth;
   if (!rules || !least) return;
   for (const chamber of chip.chambers) {
-    const neck = neckBelow(chamber, least.number);
+    // What is drawn over an edge takes the wall away there; that is looked into where it matters.
+    const neck =
+      neckBelow(chamber, least.number) && narrowest(bareSides(chip, chamber), least.number, chamber);
     if (!neck) continue;
     found.add({
       kind: 'chamber-neck',
@@ -37,27 +43,62 @@ export function checkNecks({ chip, rules }: Drawn, found: Gathered): void {
   }
 }
 
-/** The narrowest neck of a chamber below a width (nm), kept as long as the chamber; null where there is none. */
-export function neckBelow(chamber: Chamber, below: number): Neck | null {
+/** The narrowest neck of a chamber alone below a width (nm), kept as long as the chamber; null where there is none. */
+function neckBelow(chamber: Chamber, below: number): Neck | null {
   const kept = known.get(chamber);
   if (kept?.below === below) return kept.neck;
-  const neck = narrowest(chamber.outline, below);
+  const neck = narrowest(sidesOf(chamber), below, chamber);
   known.set(chamber, { below, neck });
   return neck;
 }
 
-function narrowest(outline: readonly Point[], below: number): Neck | null {
+/** A stretch of one side of a chamber where its wall stands, and the number of that side. */
+interface Side {
+  readonly of: number;
+  readonly ends: readonly [Point, Point];
+}
+
+const sidesOf = ({ outline }: Chamber): Side[] =>
+  outline.map((a, of) => ({ of, ends: [a, outline[(of + 1) % outline.length]!] }));
+
+/** What of a chamber's sides nothing else on its layer is drawn over. */
+function bareSides(chip: Chip, chamber: Chamber): Side[] {
+  const drawing = drawingOf(chip);
+  const layer = chip.layers.findIndex(({ id }) => id === chamber.layer);
+  const xs = chamber.outline.map(([x]) => x);
+  const ys = chamber.outline.map(([, y]) => y);
+  const near =
+    drawing.index?.search(Math.min(...xs), Math.min(...ys), Math.max(...xs), Math.max(...ys)) ?? [];
+  const over: Area[] = [...near.map((e) => elementSolid(chip, drawing, e)), ...otherSolids(chip)]
+    .filter((solid: Solid) => solid.layer === layer && solid.id !== chamber.id)
+    .map(({ area }) => area);
+  return sidesOf(chamber).flatMap(({ of, ends: [a, b] }): Side[] => {
+    const side = line(a[0], a[1], b[0], b[1]);
+    const marks = [0, ...over.flatMap((area) => cuts(area, side)), side.length].sort((p, q) => p - q);
+    const bare: Side[] = [];
+    for (let i = 0; i + 1 < marks.length; i += 1) {
+      const [from, to] = [marks[i]!, marks[i + 1]!];
+      if (to - from < 1) continue;
+      const [x, y] = pointAt(side, (from + to) / 2);
+      if (over.some((area) => inArea(area, x, y))) continue;
+      bare.push({ of, ends: [pointAt(side, from), pointAt(side, to)] });
+    }
+    return bare;
+  });
+}
+
+function narrowest(sides: readonly Side[], below: number, { outline }: Chamber): Neck | null {
+  if (sides.length === 0) return null;
   const n = outline.length;
-  const side = (i: number): [Point, Point] => [outline[i]!, outline[(i + 1) % n]!];
-  const index = new Flatbush(n);
-  for (let i = 0; i < n; i += 1) index.add(...box(side(i), 0));
+  const index = new Flatbush(sides.length);
+  for (const { ends } of sides) index.add(...box(ends, 0));
   index.finish();
   let neck: Neck | null = null;
-  for (let i = 0; i < n; i += 1) {
-    const own = side(i);
-    for (const j of index.search(...box(own, below))) {
-      if (j <= i + 1 || (j + 1) % n === i || !facing(own, side(j))) continue;
-      const [width, p, q] = apart(own, side(j));
+  for (const { of: i, ends: own } of sides) {
+    for (const k of index.search(...box(own, below))) {
+      const { of: j, ends: other } = sides[k]!;
+      if (j <= i + 1 || (j + 1) % n === i || !facing(own, other)) continue;
+      const [width, p, q] = apart(own, other);
       if (width >= (neck?.width ?? below)) continue;
       const at: Point = [(p[0] + q[0]) / 2, (p[1] + q[1]) / 2];
       if (width === 0 || inside(outline, at)) neck = { width, at };

@@ -1,4 +1,6 @@
+import type { Chip } from '../chip/chip.ts';
 import { drawingOf } from '../chip/read-graph-drawing.ts';
+import type { Finding } from '../problem/finding.ts';
 import type { Drawn } from './evidence.ts';
 import type { Gathered } from './gather.ts';
 import { length, METRE, placeOf } from './words.ts';
@@ -16,7 +18,7 @@ export function checkOutline(drawn: Drawn, found: Gathered): void {
   const depths = chip.layers.map(({ depth }) => depth * undercut);
   const extra = new Map(chip.layers.map((layer, i) => [layer.id, depths[i]!]));
   const { elements, boxes, layerOf } = drawingOf(chip);
-  chip.channels.forEach(({ id, path }, c) => {
+  chip.channels.forEach(({ id, path, depth }, c) => {
     let box: Box = [Infinity, Infinity, -Infinity, -Infinity];
     for (let e = elements.first[c]!; e < elements.first[c + 1]!; e += 1) {
       box = [
@@ -31,7 +33,14 @@ export function checkOutline(drawn: Drawn, found: Gathered): void {
       const { width, height } = chip.outline;
       return x <= TOUCH || y <= TOUCH || x >= width - TOUCH || y >= height - TOUCH;
     });
-    judge(drawn, id, id, grown(box, depths[layerOf[c]!]!), open, found);
+    judge(
+      drawn,
+      id,
+      id,
+      grown(box, depth === undefined ? depths[layerOf[c]!]! : depth * undercut),
+      open,
+      found,
+    );
   });
   for (const { id, layer, outline } of chip.chambers) {
     const xs = outline.map(([x]) => x);
@@ -74,6 +83,7 @@ function judge(
       at,
       value: -least / METRE,
       threshold: 0,
+      ...larger(chip, sides, edge && !open ? edge.number : 0),
       off: -least,
     });
     return;
@@ -87,8 +97,26 @@ function judge(
     at,
     value: Math.max(0, least) / METRE,
     threshold: edge!.number / METRE,
+    ...larger(chip, sides, edge!.number),
     off: edge!.number / Math.max(1, least),
   });
+}
+
+/** The edit that makes the chip larger to its right and top, where it is there alone that room is wanting. */
+export function larger(
+  { outline }: Chip,
+  [left, bottom, right, top]: readonly number[],
+  room: number,
+): Pick<Finding, 'remedy'> {
+  if (left! < room || bottom! < room) return {};
+  const wide = outline.width + Math.ceil(Math.max(0, room - right!));
+  const high = outline.height + Math.ceil(Math.max(0, room - top!));
+  return {
+    remedy: {
+      label: `make the chip ${length(wide)} by ${length(high)}`,
+      changes: [{ kind: 'set', key: 'outline', value: { width: wide, height: high } }],
+    },
+  };
 }
 
 function nearestPlace(side: number, [a, b, c, d]: Box, width: number, height: number): [number, number] {

@@ -38,7 +38,8 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
         off: reynolds / TURBULENT,
       });
     } else if (reynolds > CREEPING) entrance(stretch, reynolds, fluid.density, add);
-    const narrow = Math.min(...stretch.width, layer.depth / METRE);
+    const depth = chip.channels[piece.channelIndex]!.depth ?? layer.depth;
+    const narrow = Math.min(...stretch.width, depth / METRE);
     if (bloody && narrow < BLOOD) {
       add({
         kind: 'blood-narrow',
@@ -50,7 +51,7 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
         off: BLOOD / narrow,
       });
     }
-    if (rules?.modulus && !layer.roof) softRoof(stretch, layer, rules, add);
+    if (rules?.modulus && !layer.roof) softRoof(stretch, layer, depth, rules, add);
   }
   flatChannels(evidence, found);
   junctions(evidence, found);
@@ -59,7 +60,21 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
 
 /** Junctions solved less exactly than was asked, or with upright walls in place of their own. */
 function junctions({ cells, asked }: Evidence, found: Gathered): void {
-  for (const { id, at, accuracy, upright, uprightPeak } of cells) {
+  for (const { id, at, accuracy, upright, uprightPeak, depths } of cells) {
+    if (depths > UPRIGHT) {
+      found.add({
+        kind: 'mixed-depths',
+        severity: depths > 5 * UPRIGHT ? 'warn' : 'note',
+        where: id,
+        at,
+        says: `Channels of different depths meet in ${id}, which is solved at one depth between them: resistance inside may be ${percent(depths)} off.`,
+        do: 'Take that for the error of the split there, or give what meets there one depth.',
+        value: depths,
+        threshold: UPRIGHT,
+        error: depths,
+        off: depths / UPRIGHT,
+      });
+    }
     if (accuracy > LOOSE * asked) {
       found.add({
         kind: 'cell-accuracy',
@@ -135,12 +150,13 @@ function entrance(
 function softRoof(
   { name, pressure, width }: StretchEvidence,
   layer: Layer,
+  depth: number,
   rules: ProcessRules,
   add: (finding: Omit<Found, 'where' | 'at'>) => void,
 ): void {
   const modulus = rules.modulus!;
   const most = Math.max(Math.abs(pressure[0]), Math.abs(pressure[1]));
-  const x = (Math.max(...width) * most) / (modulus.number * (layer.depth / METRE));
+  const x = (Math.max(...width) * most) / (modulus.number * (depth / METRE));
   if (x <= SOFT) return;
   const error = softRoofError(x);
   const roof = { modulus: modulus.number, thickness: 5e-3, poisson: 0.5 };
@@ -162,9 +178,10 @@ function softRoof(
 
 function flatChannels({ chip }: Evidence, found: Gathered): void {
   const layers = new Map(chip.layers.map((layer) => [layer.id, layer]));
-  for (const { id, layer: layerId, width, path } of chip.channels) {
+  for (const { id, layer: layerId, width, path, depth: own } of chip.channels) {
     const layer = layers.get(layerId)!;
-    const ratio = Math.max(Math.max(...width) / layer.depth, layer.depth / Math.min(...width));
+    const depth = own ?? layer.depth;
+    const ratio = Math.max(Math.max(...width) / depth, depth / Math.min(...width));
     if (ratio <= FLAT) continue;
     const share =
       layer.tolerance?.depth && 'share' in layer.tolerance.depth ? layer.tolerance.depth.share : null;
@@ -173,7 +190,7 @@ function flatChannels({ chip }: Evidence, found: Gathered): void {
       severity: 'note',
       where: id,
       at: placeOf(...path[0]!),
-      says: `${id} is ${digits(ratio)} times as ${Math.max(...width) > layer.depth ? 'wide as deep' : 'deep as wide'}: an error of the smaller counts three times in its resistance${share === null ? '' : `, ${percent(3 * share)} for the layer’s tolerance`}.`,
+      says: `${id} is ${digits(ratio)} times as ${Math.max(...width) > depth ? 'wide as deep' : 'deep as wide'}: an error of the smaller counts three times in its resistance${share === null ? '' : `, ${percent(3 * share)} for the layer’s tolerance`}.`,
       do: 'Measure the smaller of the two, and give the layer its tolerance.',
       value: ratio,
       threshold: FLAT,

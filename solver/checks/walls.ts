@@ -23,14 +23,18 @@ function wallsOf(chip: Chip, graph: Graph, below: number): readonly Gap[] {
 /** Walls between what is drawn side by side: too thin, too slender, or eaten by the etch. */
 export function checkWalls({ chip, graph, rules }: Drawn, found: Gathered): void {
   const depths = new Map(chip.layers.map((layer) => [layer.id, layer.depth]));
-  const most = Math.max(0, ...depths.values());
+  // A wall is as high, and as much is etched off it, as the deeper of what lies on both sides.
+  const own = new Map(chip.channels.flatMap(({ id, depth }) => (depth === undefined ? [] : [[id, depth]])));
+  const depthBeside = ({ between, layer }: Gap): number =>
+    Math.max(...between.map((id) => own.get(id) ?? depths.get(layer)!));
+  const most = Math.max(0, ...depths.values(), ...own.values());
   const below = rules ? Math.max(THINNEST, thickest(rules, most)) : THINNEST;
   const walls = wallsOf(chip, graph, Math.ceil(below));
   if (walls.length === 0) return;
   const names = namesOf(chip);
   for (const gap of walls) {
-    const finding = judge(gap, depths.get(gap.layer)!, rules, names);
-    if (finding) found.add(finding);
+    const finding = judge(gap, depthBeside(gap), rules, names);
+    if (finding) found.add(withRemedy(chip, gap, finding));
   }
 }
 
@@ -45,7 +49,7 @@ function judge(
   depth: number,
   rules: ProcessRules | null,
   names: ReadonlyMap<string, string>,
-): Found | null {
+): (Found & { readonly lack?: number }) | null {
   const [a, b] = between;
   const base = { where: names.get(a) ?? a, at: placeOf(...at) };
   const wall = a === b ? `The wall of ${a} beside itself` : `The wall between ${a} and ${b}`;
@@ -73,6 +77,7 @@ function judge(
       ...base,
       says: `${wall} is ${length(width)} thick on the mask; the etch takes ${length(eaten)} of it, so that both sides merge.`,
       do: apart(rules.leastGap.number - left),
+      lack: rules.leastGap.number - left,
       value: left / METRE,
       threshold: 0,
       off: eaten / width,
@@ -85,6 +90,7 @@ function judge(
       ...base,
       says: `${wall} is ${length(left)} thick${eaten > 0 ? ' after the etch' : ''}; ${rules.name} holds ${length(rules.leastGap.number)} (${rules.leastGap.source}).`,
       do: apart(rules.leastGap.number - left),
+      lack: rules.leastGap.number - left,
       value: left / METRE,
       threshold: rules.leastGap.number / METRE,
       off: rules.leastGap.number / left,
@@ -98,9 +104,40 @@ function judge(
     ...base,
     says: `${wall} is ${length(depth)} high and ${length(left)} thick, ${digits(slender)} to 1; ${rules.name} holds ${digits(rules.wall.number)} to 1 (${rules.wall.source}).`,
     do: apart(depth / rules.wall.number - left),
+    lack: depth / rules.wall.number - left,
     value: slender,
     threshold: rules.wall.number,
     off: slender / rules.wall.number,
+  };
+}
+
+/** Of its width: a channel that would have to give up more is moved instead. */
+const MOST_NARROWED = 0.5;
+
+/** The finding with the edit that narrows the channels on both sides by what the wall lacks, where they can spare it. */
+function withRemedy(
+  { channels }: Chip,
+  { between }: Gap,
+  finding: Found & { readonly lack?: number },
+): Found {
+  const { lack, ...found } = finding;
+  if (lack === undefined) return found;
+  const sides = [...new Set(between)].map((id) => channels.find((channel) => channel.id === id));
+  // Each side of a channel moves in by half of what it narrows by; of two channels each gives half.
+  const by = Math.ceil(lack / 2) * 2;
+  const parts = sides.flatMap((channel) =>
+    channel && by <= MOST_NARROWED * Math.min(...channel.width)
+      ? [{ ...channel, width: [channel.width[0] - by, channel.width[1] - by] as const }]
+      : [],
+  );
+  if (parts.length < sides.length) return found;
+  const words = parts.map(({ id, width }) => `${id} to ${length(Math.max(...width))}`).join(' and ');
+  return {
+    ...found,
+    remedy: {
+      label: `narrow ${words}`.slice(0, 200),
+      changes: parts.map((part) => ({ kind: 'put', list: 'channels', id: part.id, part })),
+    },
   };
 }
 

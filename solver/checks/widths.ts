@@ -10,7 +10,9 @@ export function checkWidths({ chip, rules }: Drawn, found: Gathered): void {
   if (!rules) return;
   const layers = new Map(chip.layers.map((layer) => [layer.id, layer]));
   for (const channel of chip.channels) {
-    const layer = layers.get(channel.layer)!;
+    const on = layers.get(channel.layer)!;
+    // a channel of its own depth is judged by that
+    const layer = channel.depth === undefined ? on : { ...on, depth: channel.depth };
     if (rules.leastWidth) leastWidth(channel, rules, rules.leastWidth, found);
     if (rules.deepest) deepest(channel, layer, rules, rules.deepest, found);
     if (rules.widest) {

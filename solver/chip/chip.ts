@@ -79,7 +79,7 @@ export interface Channel {
   readonly width: readonly [Nm, Nm];
   /** Radius of the centreline at inner vertices; 0 is a mitred corner. */
   readonly bendRadius: Nm;
-  /** Its own depth, where it was measured to differ from its layer's; solved junctions keep the layer's. */
+  /** Its own depth, where it was measured to differ from its layer's. */
   readonly depth?: Nm;
   /** Of its own depth and width, in place of its layer's; the error is then its own too. */
   readonly tolerance?: { readonly depth?: Tolerance; readonly width?: Tolerance };

@@ -1,5 +1,6 @@
+import type { CellSpec } from '../cell/cut/spec.ts';
 import type { Chip } from '../chip/chip.ts';
-import type { Piece } from '../chip/graph.ts';
+import type { Graph, Piece } from '../chip/graph.ts';
 
 /** A stretch of channel that the network sees as one duct. */
 export interface Stretch {
@@ -25,6 +26,21 @@ export const NANOMETRES = 1e9;
 /** Depth of a channel in metres: its own, where it was measured, else its layer's. */
 export function channelDepth(chip: Chip, { channelIndex, layerIndex }: Piece): number {
   return (chip.channels[channelIndex].depth ?? chip.layers[layerIndex].depth) / NANOMETRES;
+}
+
+/**
+ * By how much the resistance of the channels at a solved cell may differ from what its one depth makes of it,
+ * relative: 0 where they all have that depth. At small depths resistance goes with its cube, where it differs most.
+ */
+export function depthMismatch(chip: Chip, { pieces }: Graph, { faces, shape }: CellSpec): number {
+  let most = 0;
+  for (const { piece } of faces) {
+    if (piece < 0) continue;
+    const own = channelDepth(chip, pieces[piece]);
+    most = Math.max(most, Math.abs((shape.depth / own) ** 3 - 1), Math.abs((own / shape.depth) ** 3 - 1));
+  }
+  // Metres and whole nanometres differ by rounding.
+  return most < 1e-6 ? 0 : most;
 }
 
 /** Depth of a layer in metres. */

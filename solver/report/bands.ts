@@ -1,6 +1,7 @@
 import type { Bands, CellResult, PieceResult, PortResult } from '../chip/result.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { Lumped } from '../lump/lump.ts';
+import { depthMismatch } from '../lump/stretches.ts';
 import type { Gradient, Target } from '../network/sensitivity.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import { blockErrors, ductErrors, type Parts } from './part-errors.ts';
@@ -118,7 +119,7 @@ export function bandsOf(
   return {
     ports: offered,
     pieces: ofPieces,
-    cells: cellBands(cells, lumped, ofPieces),
+    cells: cellBands(solved, ofPieces),
     ducts,
     chip: {
       share: Math.max(0, ...weighty.map((port) => own[port]!.share)),
@@ -131,14 +132,17 @@ export function bandsOf(
 
 /** Of the peak of each cell: as far off as the flow around it that is off by most, and by its own error. */
 function cellBands(
-  cells: readonly CellResult[],
-  { names, ducts }: Lumped,
+  { chip, graph, cells, lumped }: Solved,
   pieces: ErrorBands['pieces'],
 ): (NonNullable<CellResult['band']> | null)[] {
+  const { names, ducts } = lumped;
   const around = new Map(names.map((name, e) => [name, pieces[e] && pieces[e].shear - ducts[e].error]));
-  return cells.map(({ faces, peakWallShear, peakError = 0 }) => {
+  return cells.map(({ faces, peakWallShear, peakError = 0 }, i) => {
     const known = faces.flatMap((name) => around.get(name) ?? []);
-    return peakWallShear === null || known.length === 0 ? null : { shear: Math.max(...known) + peakError };
+    if (peakWallShear === null || known.length === 0) return null;
+    // Shear goes with a square of the depth where resistance goes with its cube.
+    const depths = (2 / 3) * depthMismatch(chip, graph, lumped.cells[i].spec);
+    return { shear: Math.max(...known) + peakError + depths };
   });
 }
 

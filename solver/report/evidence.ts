@@ -1,7 +1,9 @@
 import type { CellEvidence, StretchEvidence } from '../checks/evidence.ts';
+import type { Chip } from '../chip/chip.ts';
+import type { Graph } from '../chip/graph.ts';
 import type { PieceResult } from '../chip/result.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { NANOMETRES } from '../lump/stretches.ts';
+import { depthMismatch, NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 
 /** The stretches as the checks see them, with the sections and pressures that results leave out. */
@@ -25,7 +27,7 @@ export function stretchEvidence(
 }
 
 /** The solved cells as the checks see them. */
-export function cellEvidence({ cells }: Lumped): CellEvidence[] {
+export function cellEvidence(chip: Chip, graph: Graph, { cells }: Lumped): CellEvidence[] {
   return cells.flatMap(({ spec, solution }): CellEvidence[] => {
     if (!solution) return [];
     const { name: id, origin } = spec;
@@ -38,6 +40,7 @@ export function cellEvidence({ cells }: Lumped): CellEvidence[] {
         accuracy: spec.faces.some(({ kind }) => kind === 'rim') ? 0 : flowError - profileError,
         upright: profileError,
         uprightPeak: profilePeakError,
+        depths: depthMismatch(chip, graph, spec),
       },
     ];
   });

@@ -10,7 +10,7 @@ import { sectionExposure } from '../exposure/section-of.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { PlacedCell } from '../lump/layout.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { channelDepth, depthOf, NANOMETRES } from '../lump/stretches.ts';
+import { channelDepth, NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Rheology } from '../section/rheology/local.ts';
 import { chamberPools, type Pool } from './pools.ts';
@@ -152,7 +152,7 @@ function pathsOf(
   const { matrix } = lumped.spec.blocks[lumped.cellBlock[index]];
   const widest = spec.faces.reduce((most, face) => Math.max(most, face.width), 0) / NANOMETRES;
   const layer = chip.layers[spec.layerIndex];
-  const depth = depthOf(chip, spec.layerIndex);
+  const { depth } = spec.shape;
   // Rims have no cross-section: any width serves to spread times as a channel does.
   const around = sectionExposure(
     layer.profile,

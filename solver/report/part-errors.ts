@@ -5,7 +5,7 @@ import type { Graph, Piece } from '../chip/graph.ts';
 import type { PieceResult } from '../chip/result.ts';
 import type { Duct } from '../lump/duct.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { channelDepth, NANOMETRES } from '../lump/stretches.ts';
+import { channelDepth, depthMismatch, NANOMETRES } from '../lump/stretches.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import { excesses, slenderness } from './ideal-excess.ts';
 
@@ -86,14 +86,15 @@ function idealShare(
  * Relative error of every block of the network: of flows, which errors of several cells share, or `whole`, of
  * the power that drives it.
  */
-export function blockErrors({ lumped, inertia }: Parts, whole = false): Float64Array {
+export function blockErrors({ chip, graph, lumped, inertia }: Parts, whole = false): Float64Array {
   const errors = new Float64Array(lumped.spec.blocks.length);
   lumped.cells.forEach(({ spec, solution }, index) => {
     if (!solution) return;
     const { flowError, profileError } = solution;
     // What stands in for walls that lean, or for the turn into a hole, may well be off by all of its bound.
     const solved = spec.faces.some(({ kind }) => kind === 'rim') ? 0 : flowError - profileError;
-    errors[lumped.cellBlock[index]] = flowError - (whole ? 0 : (1 - OF_BOUND) * solved) + inertia[index];
+    errors[lumped.cellBlock[index]] =
+      flowError - (whole ? 0 : (1 - OF_BOUND) * solved) + inertia[index] + depthMismatch(chip, graph, spec);
   });
   return errors;
 }

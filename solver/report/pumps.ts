@@ -1,8 +1,10 @@
 import type { Chip, Port } from '../chip/chip.ts';
 import type { PumpResult } from '../chip/result.ts';
+import { formatQuantity } from '../chip/units-format.ts';
 import type { Lumped } from '../lump/lump.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
+import { slowed } from './slowed.ts';
 
 /** What each driven port asks of what stands behind it, against what that can do; and the chip against its rating. */
 export function pumpResults(
@@ -20,7 +22,7 @@ export function pumpResults(
     if (!Number.isFinite(pressure) || !Number.isFinite(out)) return;
     const result = pumpResult(port, pressure, out, chip.assay?.time);
     pumps.push(result);
-    findings.push(...pumpFindings(port, result, chip.assay?.time));
+    findings.push(...pumpFindings(chip, port, result, !lumped.laws));
   });
   return { pumps, findings: [...findings, ...ratingFindings(chip, lumped, flow, pumps)] };
 }
@@ -46,8 +48,14 @@ function pumpResult(port: Port, pressure: number, flow: number, assay: number | 
   };
 }
 
-function pumpFindings(port: Port, result: PumpResult, assay: number | undefined): Finding[] {
-  const { pump } = port;
+/** @param linear whether all pressures and flows go with the drives */
+function pumpFindings(chip: Chip, port: Port, result: PumpResult, linear: boolean): Finding[] {
+  const { pump, reservoir } = port;
+  const assay = chip.assay?.time;
+  const lower = (factor: number): Pick<Finding, 'remedy'> => {
+    const remedy = linear ? slowed(chip, factor) : null;
+    return remedy ? { remedy } : {};
+  };
   const where = `port:${port.id}`;
   const findings: Finding[] = [];
   if (pump?.pressure !== undefined && Math.abs(result.pressure) > pump.pressure) {
@@ -57,6 +65,9 @@ function pumpFindings(port: Port, result: PumpResult, assay: number | undefined)
       where,
       says: `The pump at ${port.id} must hold ${kilo(result.pressure)}, tubing included; it can do ${kilo(pump.pressure)}.`,
       do: 'Widen or shorten the channels and tubing on its way, let less flow, or take a stronger pump.',
+      value: Math.abs(result.pressure),
+      threshold: pump.pressure,
+      ...lower(pump.pressure / Math.abs(result.pressure)),
     });
   }
   if (pump?.flow !== undefined && Math.abs(result.flow) > pump.flow) {
@@ -66,15 +77,31 @@ function pumpFindings(port: Port, result: PumpResult, assay: number | undefined)
       where,
       says: `The pump at ${port.id} must move ${microlitres(result.flow)}; it can do ${microlitres(pump.flow)}.`,
       do: 'Let less flow, or take a larger pump or syringe.',
+      value: Math.abs(result.flow),
+      threshold: pump.flow,
+      ...lower(pump.flow / Math.abs(result.flow)),
     });
   }
   if (result.runTime !== null && assay !== undefined && result.runTime < assay) {
+    const volume = Math.abs(result.flow) * assay * (1 + 1e-9);
+    const larger = {
+      ...port,
+      ...(pump?.volume === undefined
+        ? { reservoir: { ...reservoir, volume } }
+        : { pump: { ...pump, volume } }),
+    };
     findings.push({
       kind: 'runs-out',
       severity: 'warn',
       where,
       says: `What ${port.id} holds lasts ${result.runTime.toPrecision(3)} s; the assay takes ${assay.toPrecision(3)} s.`,
-      do: 'Give it more, refill on the way, or let less flow.',
+      do: `Give it ${litres(volume)} or more, refill on the way, or let less flow.`,
+      value: result.runTime,
+      threshold: assay,
+      remedy: {
+        label: `give ${port.id} ${litres(volume)}`.slice(0, 200),
+        changes: [{ kind: 'put', list: 'ports', id: port.id, part: larger }],
+      },
     });
   }
   return findings;
@@ -101,6 +128,7 @@ function ratingFindings(
     see(flow.pressure[lumped.portNode[index]], `port:${id}`);
   });
   if (most <= rating.pressure) return [];
+  const remedy = lumped.laws ? null : slowed(chip, rating.pressure / most);
   return [
     {
       kind: 'burst',
@@ -108,9 +136,13 @@ function ratingFindings(
       where,
       says: `The pressure reaches ${kilo(most)} at ${where.replace('port:', '')}; chip and fittings are rated for ${kilo(rating.pressure)}.`,
       do: 'Lower the drive or the resistance, and wear eye protection: pressurised glass, tubing and fittings can burst.',
+      value: most,
+      threshold: rating.pressure,
+      ...(remedy && { remedy }),
     },
   ];
 }
 
+const litres = (volume: number): string => formatQuantity(volume, 'volume', { digits: 3 });
 const kilo = (pressure: number): string => `${(pressure / 1e3).toPrecision(3)} kPa`;
 const microlitres = (flow: number): string => `${(Math.abs(flow) * 6e10).toPrecision(3)} µL/min`;

@@ -62,7 +62,7 @@ export function report(
   const pumps = pumpResults(chip, lumped, flow);
   const drift = driftOf(chip, lumped, flow, fluid.density);
   const limits = limitResults({ chip, graph, lumped, flow, channels, cells, exposure, between });
-  const inertia = inertiaShares(lumped, chip, flow, pieces, fluid.density);
+  const inertia = inertiaShares(lumped, flow, pieces, fluid.density);
   const bands = bandsOf(
     { chip, graph, lumped, flow, pieces, density: fluid.density, inertia, ports, cells, fluid },
     depends,
@@ -78,7 +78,7 @@ export function report(
     fluid,
     stretches,
     ports,
-    cells: cellEvidence(lumped),
+    cells: cellEvidence(chip, graph, lumped),
     asked,
   });
   const told = {

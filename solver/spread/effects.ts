@@ -2,7 +2,7 @@ import type { Chip } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
 import { ductOf } from '../lump/duct.ts';
 import type { Lumped } from '../lump/lump.ts';
-import { channelDepth, depthOf, type Stretch } from '../lump/stretches.ts';
+import { channelDepth, type Stretch } from '../lump/stretches.ts';
 import type { Gradient } from '../network/sensitivity.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import { roofLaw } from '../section/roof/roof.ts';
@@ -148,7 +148,7 @@ function cellEffects({ chip, graph, lumped, flow }: Net, sources: Sources, index
   const block = lumped.cellBlock[index];
   if (block < 0) return [];
   const { profile } = chip.layers[spec.layerIndex];
-  const h = depthOf(chip, spec.layerIndex);
+  const h = spec.shape.depth;
   const { places, stretches } = insideOf(graph, spec);
   const slopes = stretches.map(({ piece, width }) =>
     piece < 0 ? null : knownSlopes(profile, width, h, graph.pieces[piece].channel),

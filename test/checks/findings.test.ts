@@ -12,18 +12,25 @@ import { SOLVED_CASES } from './solved-cases.ts';
 
 /** Kinds whose remedy is a number, and so a button. */
 const WITH_BUTTON = [
+  'burst',
+  'etch-merge',
   'hole-narrow',
   'keep-out',
   'layer-wall',
+  'least-gap',
   'least-width',
   'loop-passes',
   'port-hole',
   'process-profile',
+  'pump-flow',
+  'pump-pressure',
   'roof-sags',
+  'runs-out',
   'soft-roof',
   'too-deep',
   'tool-corner',
   'via-land',
+  'wall-leans',
 ];
 
 describe('each kind: one chip just passes, one just fails', () => {
@@ -71,6 +78,63 @@ describe('each kind: one chip just passes, one just fails', () => {
     expect(found!.value).toBeCloseTo(15, 1);
     expect(ofKind(film({ ...well(2100) }), 'roof-sags')[0]!.severity).toBe('stop');
     expect(ofKind(film({ ...well(1000) }), 'roof-sags')).toEqual([]);
+  });
+
+  test('where room is wanting to the right or above, the chip can be made larger', () => {
+    const gone = (chip: ReturnType<typeof chipOf>, kind: string): void => {
+      const [found] = ofKind(chip, kind);
+      expect(found!.remedy!.label, kind).toMatch(/^make the chip /);
+      expect(ofKind(applyEdit(chip, readEdit(structuredClone(found!.remedy))), kind), kind).toEqual([]);
+    };
+    const at = (x: number, diameter: number) => ({
+      ports: [
+        port('in', [6000, 12000], { flow: '1 uL/min' }),
+        port('out', [x, 12000], { pressure: 0 }, diameter),
+      ],
+      outline: { width: 68000, height: 27000 },
+    });
+    // the hole reaches to 68.5 mm; its centre lies 2 mm from the side of 68 mm
+    gone(chipOf(at(66000, 5000)), 'outside');
+    gone(film(at(66000, 1000)), 'port-edge');
+    // a via or port in the lower left would have to be moved with all that joins there: said in words
+    const low = film({
+      ports: [port('in', [6000, 1000], { flow: '1 uL/min' }), port('out', [66000, 12000], { pressure: 0 })],
+      channels: [
+        {
+          id: 'a',
+          layer: 'flow',
+          path: [
+            [6000, 1000],
+            [6000, 12000],
+            [66000, 12000],
+          ],
+          width: 200,
+        },
+      ],
+    });
+    expect(ofKind(low, 'port-edge')[0]).not.toHaveProperty('remedy');
+  });
+
+  test('a neck that a channel is drawn over is none', () => {
+    const outline = [
+      [30000, 11000],
+      [34000, 11990],
+      [38000, 11000],
+      [38000, 13000],
+      [34000, 12010],
+      [30000, 13000],
+    ];
+    const waist = (width: number) =>
+      ofKind(
+        film({
+          chambers: [{ id: 'waist', layer: 'flow', outline }],
+          channels: [line('a', 12000, width)],
+        }),
+        'chamber-neck',
+      );
+    // the waist is 20 µm; a channel of 15 through it leaves its walls bare, one of 200 has walls of its own
+    expect(waist(15).map(({ value }) => value! * 1e6)).toEqual([expect.closeTo(20, 3)]);
+    expect(waist(200)).toEqual([]);
   });
 
   test('a keep-out holds of channels, chambers and holes, of its own layer alone where it names one', () => {

@@ -184,7 +184,14 @@ const trickle = (share: number): Chip =>
 /** Findings of the checks alone about one junction that reached an accuracy. */
 const reached = (accuracy: number) => (): readonly Finding[] => {
   const chip = tee();
-  const junction = { id: 'junction:1', at: [0.03, 0.012], accuracy, upright: 0, uprightPeak: 0 } as const;
+  const junction = {
+    id: 'junction:1',
+    at: [0.03, 0.012],
+    accuracy,
+    upright: 0,
+    uprightPeak: 0,
+    depths: 0,
+  } as const;
   return checkFindings({
     chip,
     graph: readGraph(chip),
@@ -194,6 +201,13 @@ const reached = (accuracy: number) => (): readonly Finding[] => {
     cells: [junction],
     asked: 0.004,
   });
+};
+
+/** A tee of which one arm was measured to be deeper than its layer. */
+const deeper = (depth: number): Chip => {
+  const chip = tee();
+  const [first, ...others] = chip.channels;
+  return { ...chip, channels: [{ ...first!, depth }, ...others] };
 };
 
 const soft = (time: string): Chip =>
@@ -296,6 +310,8 @@ export const SOLVED_CASES: readonly Case[] = [
     SOLVED,
   ],
   // 0.003 + 0.03 × depth/tan 54.74°/200 is 0.01 at a depth of 66.008
+  // between 100 and 100.6 µm the mean is 100.3, and (100.6/100.3)³ − 1 is 0.0090; for 100.7 it is 0.01053
+  ['mixed-depths', deeper(100_600), deeper(100_700), 0.01053, 0.01, SOLVED],
   ['upright-walls', leaning(66), leaning(67), 0.010105, 0.01, SOLVED],
   // usual from 4 to 50 °C
   ['temperature', water('50 degC'), water('50.1 degC'), 323.25, 323.15],

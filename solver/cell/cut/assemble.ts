@@ -94,7 +94,7 @@ export function assemble(
     parts.push({
       shape: {
         loops: localised(shape, tags, origin),
-        depth: layer.depth * 1e-9,
+        depth: groundDepth(drawing, ground, layer.depth) * 1e-9,
         faces: tags.length,
         profile: layer.profile,
       },
@@ -103,6 +103,17 @@ export function assemble(
   }
   const cuts = mouths.filter((m) => m.kind !== 'rim').length;
   return seen.size === cuts ? parts : undefined;
+}
+
+/**
+ * The one depth (nm) that a ground is solved at: that of its channels where they share one, their geometric mean
+ * where they do not (a trust finding says so), the layer's where a chamber is part of it.
+ */
+function groundDepth(drawing: Drawing, { spans, chambers }: Ground, layer: number): number {
+  if (chambers.length > 0 || spans.length === 0) return layer;
+  const depths = spans.map(({ channel }) => drawing.chip.channels[channel]!.depth ?? layer);
+  const [least, most] = [Math.min(...depths), Math.max(...depths)];
+  return least === most ? least : Math.round(Math.sqrt(least * most));
 }
 
 function mouthAt(drawing: Drawing, channel: number, end: SpanEnd, side: 1 | -1): Mouth | undefined {

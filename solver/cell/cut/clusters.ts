@@ -96,7 +96,8 @@ function neighbours(drawing: Drawing, byChannel: readonly (readonly Core[])[]): 
 }
 
 export function depthOf(drawing: Drawing, channel: number): number {
-  return drawing.chip.layers[drawing.layerOf[channel]!]!.depth;
+  const { channels, layers } = drawing.chip;
+  return channels[channel]!.depth ?? layers[drawing.layerOf[channel]!]!.depth;
 }
 
 /** Size of every source alone: lengths of its cores in widths (or, shallow, in thrice the depth), chambers by their walls. */
