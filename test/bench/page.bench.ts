@@ -1,12 +1,12 @@
-import { mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
-import { join, resolve } from 'node:path';
-import { gzipSync } from 'node:zlib';
+import { join } from 'node:path';
 import type { CDPSession, Page } from 'playwright-core';
 import { splitTree } from '../../renderer/makers/split-tree.ts';
 import { emptyChip } from '../../renderer/testing/chips.ts';
 import { writeDescription } from '../../solver/chip/description-write.ts';
 import { answered, type Sitting, sit } from '../page/desk.ts';
+import { memory, starting } from './page-start.ts';
 import type { BenchRow } from './row.ts';
 
 /**
@@ -16,7 +16,6 @@ import type { BenchRow } from './row.ts';
  */
 
 const FRAME = 1000 / 60;
-const DIST = resolve(import.meta.dirname, '../../dist/renderer');
 
 /** A tree to 64 outlets: 127 channels. */
 function treeChip(): string {
@@ -197,29 +196,11 @@ async function answers(folder: string): Promise<BenchRow[]> {
       );
       await page.getByRole('searchbox').fill('');
     }
-    rows.push(await memory(sitting, '127 channels, solved'));
+    rows.push(...(await memory(sitting, '127 channels, solved')));
     return rows;
   } finally {
     await sitting.end();
   }
-}
-
-/** MB that the page's process holds: the page, its solving thread and its junction threads. */
-async function memory(sitting: Sitting, what: string): Promise<BenchRow> {
-  const cdp = await sitting.context.browser()!.newBrowserCDPSession();
-  const { processInfo } = await cdp.send('SystemInfo.getProcessInfo');
-  let most = 0;
-  for (const { type, id } of processInfo) {
-    if (type !== 'renderer') continue;
-    try {
-      // what it shares with other processes is counted in parts
-      const shared = /^Pss:\s+(\d+) kB/m.exec(readFileSync(`/proc/${id}/smaps_rollup`, 'utf8'));
-      most = Math.max(most, Number(shared?.[1] ?? 0) / 1e3);
-    } catch {
-      // not told where there is no /proc
-    }
-  }
-  return { what: `memory, ${what}`, median: most, unit: 'MB', runs: 1, target: 400 };
 }
 
 async function dragging(folder: string): Promise<BenchRow[]> {
@@ -361,48 +342,11 @@ async function panning(folder: string, count: number, frames: number): Promise<B
         ratio: script / FRAME,
         target: 60 / frames,
       },
-      await memory(sitting, `${count} channels`),
+      ...(await memory(sitting, `${count} channels`)),
     ];
   } finally {
     await sitting.end();
   }
-}
-
-async function starting(folder: string): Promise<BenchRow[]> {
-  const file = join(folder, 'snake-1000.json');
-  writeFileSync(file, snakeChip(1000));
-  const times: number[] = [];
-  for (let i = 0; i < 3; i += 1) {
-    const sitting = await sit({ files: [file] });
-    times.push(
-      await sitting.page.evaluate(
-        () =>
-          new Promise<number>((done) => {
-            const usable = (): void => {
-              if (document.querySelector('.sheet canvas') && document.querySelector('.grid-row'))
-                done(performance.now());
-              else requestAnimationFrame(usable);
-            };
-            usable();
-          }),
-      ),
-    );
-    await sitting.end();
-  }
-  const html = readFileSync(join(DIST, 'index.html'), 'utf8');
-  const files = [...html.matchAll(/(?:src|href)="\.\/(assets\/[^"]+\.js)"/g)].map((found) => found[1]!);
-  const bytes = files.reduce((sum, name) => sum + gzipSync(readFileSync(join(DIST, name))).length, 0);
-  return [
-    {
-      what: 'start of the page to usable, 1000 channels',
-      median: median(times),
-      unit: 'ms',
-      runs: times.length,
-      target: 1500,
-      note: 'from navigation, as the page counts; at most, because the look comes after loading',
-    },
-    { what: 'entry of the page, gzipped', median: bytes / 1e3, unit: 'kB', runs: 1, target: 600 },
-  ];
 }
 
 /** By name, so that one can be run alone. */
@@ -411,7 +355,7 @@ export const PARTS: Readonly<Record<string, (folder: string) => Promise<BenchRow
   dragging,
   'pan 5000': (folder) => panning(folder, 5000, 60),
   'pan 50000': (folder) => panning(folder, 50_000, 30),
-  starting,
+  starting: (folder) => starting(folder, snakeChip(1000)),
 };
 
 export default async function page(): Promise<BenchRow[]> {
