@@ -7,7 +7,7 @@ import { readGraph } from './chip/read-graph.ts';
 import { type CellMemory, cellMemory } from './lump/cells.ts';
 import { lawMemory } from './lump/laws.ts';
 import type { Lumped, LumpMemory } from './lump/lump.ts';
-import { type PreparedNetwork, prepareNetwork } from './network/prepare.ts';
+import { type PreparedNetwork, preparedFor, prepareNetwork } from './network/prepare.ts';
 import { type Gradient, gradients, type Target } from './network/sensitivity.ts';
 import { solveNetwork } from './network/solve-network.ts';
 import { solveNonlinear } from './network/solve-nonlinear.ts';
@@ -25,7 +25,7 @@ export interface Memory {
   graph(chip: Chip): Graph;
   cut(chip: Chip): Cut;
   /**
-   * Solves, reusing the order and symbolic factorisation of the last network of the same topology, and
+   * Solves, reusing the order and symbolic factorisation of a network of the same topology, and
    * its pressures as a start where ducts follow laws of their own.
    */
   network(lumped: Lumped): NetworkSolution;
@@ -35,6 +35,19 @@ export interface Memory {
   slopes(lumped: Lumped, flow: NetworkSolution, targets: readonly Target[]): Gradient[] | null;
 }
 
+/** A network's order and factorisation, and pressures to start from where ducts follow laws. */
+interface Prepared {
+  readonly spec: NetworkSpec;
+  readonly network: PreparedNetwork;
+  start: Float64Array | undefined;
+}
+/**
+ * Networks kept beside the last: one whose junctions are not solved yet has another topology, and while one
+ * channel is edited the same few come by turns. Larger ones would take too much memory.
+ */
+const OTHERS = 3;
+const MOST_NODES = 5000;
+
 /** @param store where solved cells are kept; in memory alone if none is given */
 export function emptyMemory(store?: CellStore): Memory {
   let last: { chip: Chip; graph: Graph; cut: Cut | null } | null = null;
@@ -42,8 +55,8 @@ export function emptyMemory(store?: CellStore): Memory {
     if (!last || !sameDrawing(last.chip, chip)) last = { chip, graph: readGraph(chip), cut: null };
     return last;
   };
-  let prepared: { spec: NetworkSpec; network: PreparedNetwork } | null = null;
-  let start: Float64Array | undefined;
+  let prepared: Prepared | null = null;
+  let others: readonly Prepared[] = [];
   return {
     gradients({ spec, laws }, flow, targets) {
       if (!prepared || laws || flow.faults.length > 0) return null;
@@ -65,12 +78,17 @@ export function emptyMemory(store?: CellStore): Memory {
     },
     network({ spec, laws }) {
       if (!prepared || !sameTopology(prepared.spec, spec)) {
-        prepared = { spec, network: prepareNetwork(spec) };
-        start = undefined;
+        const last = prepared;
+        const known = others.find((other) => sameTopology(other.spec, spec));
+        const network = known ? preparedFor(spec, known.network) : prepareNetwork(spec);
+        prepared = { spec, network, start: undefined };
+        others = [...(last ? [last] : []), ...others.filter((other) => other !== known)]
+          .filter((other) => other.spec.nodeCount <= MOST_NODES)
+          .slice(0, OTHERS);
       }
       if (!laws) return solveNetwork(spec, prepared.network);
-      const solved = solveNonlinear(spec, laws, prepared.network, start);
-      start = solved.faults.length === 0 ? solved.pressure : undefined;
+      const solved = solveNonlinear(spec, laws, prepared.network, prepared.start);
+      prepared.start = solved.faults.length === 0 ? solved.pressure : undefined;
       return solved;
     },
   };

@@ -206,7 +206,16 @@ test('where the hand rests, what it holds is solved ahead; let go there, it is a
   expect(answers[0]).toMatchObject({ waiting: 0, outcome: { ok: true } });
   const { outcome } = answers[0]!;
   const fresh = solve({ ...chip, channels: chip.channels.map((one) => (one === moved ? part : one)) }, FAIR);
-  if (outcome.ok) expect(outcome.result).toEqual(fresh);
+  if (!outcome.ok) return;
+  const { result } = outcome;
+  expect(result.junctions).toBe('solved');
+  expect(result.cells.map(({ id, accuracy }) => [id, accuracy])).toEqual(
+    fresh.cells.map(({ id, accuracy }) => [id, accuracy]),
+  );
+  // a network kept from before sums up in another order
+  result.ports.forEach(({ flow }, i) => {
+    expect(flow! / fresh.ports[i]!.flow!).toBeCloseTo(1, 9);
+  });
 });
 
 test('solved junctions are handed over to be kept when it has been quiet', () => {

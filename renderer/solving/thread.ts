@@ -14,6 +14,7 @@ import { Problem } from '../../solver/problem/problem.ts';
 import { accuracyOf, type SolveOptions, solve } from '../../solver/solve.ts';
 import { verdicts } from '../verdict/verdicts.ts';
 import { showIn } from '../words/figure.ts';
+import { exercise } from './exercise.ts';
 import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 
 /** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
@@ -30,6 +31,8 @@ const REST = 60;
 /** ms without an order before solved junctions are handed over to be kept, and how many of them may wait. */
 const QUIET = 700;
 const MOST_UNKEPT = 64;
+/** ms without an order after which the thread may do what nobody asked for. */
+const IDLE = 1500;
 /** Bytes of solved junctions held beside those in use; the project keeps the others. */
 const MOST_KEPT = 96e6;
 /** Keys asked for at once, within what a request may carry. */
@@ -94,6 +97,7 @@ export function solvingThread(
   /** Solved and not yet handed over to be kept, by key. */
   const unkept = new Map<string, ShapeSolution>();
   let keeping = false;
+  let exercised = false;
   /** Keys the project was asked for, and answers of it that are still to come. */
   const wanted = new Set<string>();
   let open = 0;
@@ -201,6 +205,7 @@ export function solvingThread(
       const fresh = answerTo(chip, false);
       tellShort(chip, fresh);
       handOn(fresh.waiting);
+      if (fresh.outcome.ok && fresh.waiting.length === 0) exerciseLater();
     }
     if (!dragDue || !drag) return;
     dragDue = false;
@@ -217,6 +222,23 @@ export function solvingThread(
     if (!hand || drag?.id !== id || asked) return;
     const accuracy = accuracyOf(options);
     hand.solve(lackingCells(memory.cut(drag.chip).cells, accuracy, memory.cells), accuracy, true);
+  };
+  /** Once, when the first chip is answered and nothing is asked: the next answers come faster. */
+  const exerciseLater = (): void => {
+    if (exercised || !hand) return;
+    exercised = true;
+    let round: (() => boolean) | null = null;
+    const turn = (): void => {
+      const quiet = performance.now() - Math.max(ordered, ready);
+      if (!chip || drag || asked || quiet < IDLE) {
+        // edits that come meanwhile are exercise enough
+        if (!round) after(turn, IDLE);
+        return;
+      }
+      round ??= exercise(chip, options, memory.cells);
+      if (round()) later(turn);
+    };
+    after(turn, IDLE);
   };
   const work = (): void => {
     if (asked) return;
@@ -282,6 +304,8 @@ export function solvingThread(
           const solution = decodeSolution(bytes);
           if (solution) memory.cells.store.put(key, solution);
         }
+        // nothing was kept, and what is new is being solved already
+        if (order.cells.length === 0 && edited) return;
         return soon();
       case 'load':
         memory = emptyMemory(memoryStore(MOST_KEPT));

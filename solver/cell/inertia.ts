@@ -1,11 +1,21 @@
 import type { CellFields, CellSolution } from './cell.ts';
 import { depthValues } from './depth.ts';
-import { type FlowField, flowField } from './flow-field.ts';
-import { emptySample, sampleAt } from './sample.ts';
+import { HALF, mixVelocity, type VelocityField } from './flow-field.ts';
+import { rimPressures } from './rim.ts';
+import { quadraticGradient } from './triangle.ts';
 
-/** Middles of the three sides: exact to degree two on a triangle. */
-const SIDE_A = [0.5, 0, 0.5] as const;
-const SIDE_B = [0.5, 0.5, 0] as const;
+/** Derivatives of the quadratics in the middles of the three sides, which are exact to degree two on a triangle. */
+const SIDES = (
+  [
+    [0.5, 0.5],
+    [0, 0.5],
+    [0.5, 0],
+  ] as const
+).map(([la, lb]) => {
+  const [da, db] = [new Float64Array(6), new Float64Array(6)];
+  quadraticGradient(la, lb, da, db);
+  return { da, db };
+});
 /** Gauss points on [0, 1], exact to degree seven. */
 const HEIGHT = [0.0694318442029737, 0.3300094782075719, 0.6699905217924281, 0.9305681557970263] as const;
 const WEIGHT = [0.1739274225687269, 0.3260725774312731, 0.3260725774312731, 0.1739274225687269] as const;
@@ -83,50 +93,123 @@ function sharedTensor(solution: CellSolution): Float64Array | null {
   return tensor;
 }
 
-/** patterns x patterns x patterns: minus the integral of (u_j . grad u_k) . u_f; null where fields were not kept. */
+/**
+ * patterns x patterns x patterns: minus the integral of (u_j . grad u_k) . u_f; null where fields were not kept.
+ * A scalar is the same in every frame: it is reckoned in that of the solved copy.
+ */
 function tensorOf(solution: CellSolution): Float64Array | null {
-  const { faces } = solution;
+  const { faces, fields } = solution;
+  if (!fields) return null;
   const patterns = faces - 1;
-  const flows: FlowField[] = [];
-  for (let i = 0; i < patterns; i += 1) {
+  const { face } = solution.placements[0];
+  const flows = Array.from({ length: patterns }, (_, i) => {
     const unit = new Float64Array(faces);
     unit[i] = 1;
-    const flow = flowField(solution, unit);
-    if (!flow) return null;
-    flows.push(flow);
-  }
+    const rims = rimPressures(solution, unit);
+    return mixVelocity(
+      fields,
+      Float64Array.from(face, (mine) => rims[mine]),
+    );
+  });
   const tensor = new Float64Array(patterns ** 3);
-  const { mesh, depth } = flows[0];
-  const samples = flows.map(() => emptySample());
-  const force = new Float64Array(3);
+  const { triangles, x, y } = fields.mesh;
+  const layers = flows.map(() => new Float64Array(6 * fields.mesh.nodeCount));
+  const velocity = new Float64Array(3 * patterns);
+  /** Slopes by x, y, z of each component, pattern by pattern. */
+  const slopes = new Float64Array(9 * patterns);
   for (let level = 0; level < HEIGHT.length; level += 1) {
-    const modes = depthValues(depth, HEIGHT[level]);
-    for (let t = 0; t < mesh.triangles.length / 6; t += 1) {
-      const [a, b, c] = mesh.triangles.subarray(6 * t, 6 * t + 3);
-      const area =
-        ((mesh.x[b] - mesh.x[a]) * (mesh.y[c] - mesh.y[a]) -
-          (mesh.x[c] - mesh.x[a]) * (mesh.y[b] - mesh.y[a])) /
-        2;
+    flows.forEach((flow, f) => {
+      layerAt(flow, HEIGHT[level], layers[f]);
+    });
+    for (let t = 0; t < triangles.length; t += 6) {
+      const [a, b, c] = [triangles[t], triangles[t + 1], triangles[t + 2]];
+      const area = ((x[b] - x[a]) * (y[c] - y[a]) - (x[c] - x[a]) * (y[b] - y[a])) / 2;
       // Both halves of depth 1.
       const weight = (WEIGHT[level] * area) / 3;
-      for (let i = 0; i < 3; i += 1) {
-        const place = { triangle: t, la: SIDE_A[i], lb: SIDE_B[i] };
-        for (let f = 0; f < patterns; f += 1) sampleAt(flows[f], place, modes, samples[f]);
-        for (let j = 0; j < patterns; j += 1) {
-          const u = samples[j].velocity;
-          for (let k = 0; k < patterns; k += 1) {
-            const g = samples[k].gradient;
-            for (let d = 0; d < 3; d += 1)
-              force[d] = u[0] * g[3 * d] + u[1] * g[3 * d + 1] + u[2] * g[3 * d + 2];
-            for (let f = 0; f < patterns; f += 1) {
-              const v = samples[f].velocity;
-              tensor[(f * patterns + j) * patterns + k] -=
-                weight * (force[0] * v[0] + force[1] * v[1] + force[2] * v[2]);
+      for (let side = 0; side < 3; side += 1) {
+        const { da, db } = SIDES[side];
+        let [xa, xb, ya, yb] = [0, 0, 0, 0];
+        for (let i = 0; i < 6; i += 1) {
+          const node = triangles[t + i];
+          xa += da[i] * x[node];
+          xb += db[i] * x[node];
+          ya += da[i] * y[node];
+          yb += db[i] * y[node];
+        }
+        const det = xa * yb - xb * ya;
+        slopes.fill(0);
+        for (let i = 0; i < 6; i += 1) {
+          const gx = (da[i] * yb - db[i] * ya) / det;
+          const gy = (db[i] * xa - da[i] * xb) / det;
+          const at = 6 * triangles[t + i];
+          for (let f = 0; f < patterns; f += 1) {
+            const layer = layers[f];
+            for (let d = 0; d < 3; d += 1) {
+              slopes[9 * f + 3 * d] += gx * layer[at + d];
+              slopes[9 * f + 3 * d + 1] += gy * layer[at + d];
             }
           }
         }
+        // in the middle of a side there is a node, and what it has is the value
+        const at = 6 * triangles[t + 3 + side];
+        for (let f = 0; f < patterns; f += 1) {
+          for (let d = 0; d < 3; d += 1) {
+            velocity[3 * f + d] = layers[f][at + d];
+            slopes[9 * f + 3 * d + 2] = layers[f][at + 3 + d];
+          }
+        }
+        addProducts(velocity, slopes, weight, patterns, tensor);
       }
     }
   }
   return tensor;
+}
+
+/** Of every node, velocity x, y, z at a height (of half depth 1) and their slopes across the plan. */
+function layerAt({ mesh, depth, inPlane, across }: VelocityField, height: number, out: Float64Array): void {
+  const modes = depthValues(depth, height);
+  const { nodeCount } = mesh;
+  out.fill(0);
+  for (let k = 0; k < inPlane.length; k += 1) {
+    const [value, slope] = [modes.inPlane[k], modes.inPlaneSlope[k] / HALF];
+    const mode = inPlane[k];
+    for (let node = 0; node < nodeCount; node += 1) {
+      const at = 6 * node;
+      out[at] += value * mode[node];
+      out[at + 1] += value * mode[nodeCount + node];
+      out[at + 3] += slope * mode[node];
+      out[at + 4] += slope * mode[nodeCount + node];
+    }
+  }
+  for (let m = 0; m < across.length; m += 1) {
+    const [value, slope] = [modes.across[m], modes.acrossSlope[m] / HALF];
+    const mode = across[m];
+    for (let node = 0; node < nodeCount; node += 1) {
+      out[6 * node + 2] += value * mode[node];
+      out[6 * node + 5] += slope * mode[node];
+    }
+  }
+}
+
+/** Takes weight (u_j . grad u_k) . u_f off the tensor, at one place. */
+function addProducts(
+  velocity: Float64Array,
+  slopes: Float64Array,
+  weight: number,
+  patterns: number,
+  tensor: Float64Array,
+): void {
+  for (let j = 0; j < patterns; j += 1) {
+    const [ux, uy, uz] = [velocity[3 * j], velocity[3 * j + 1], velocity[3 * j + 2]];
+    for (let k = 0; k < patterns; k += 1) {
+      const g = 9 * k;
+      const fx = ux * slopes[g] + uy * slopes[g + 1] + uz * slopes[g + 2];
+      const fy = ux * slopes[g + 3] + uy * slopes[g + 4] + uz * slopes[g + 5];
+      const fz = ux * slopes[g + 6] + uy * slopes[g + 7] + uz * slopes[g + 8];
+      for (let f = 0; f < patterns; f += 1) {
+        const along = fx * velocity[3 * f] + fy * velocity[3 * f + 1] + fz * velocity[3 * f + 2];
+        tensor[(f * patterns + j) * patterns + k] -= weight * along;
+      }
+    }
+  }
 }

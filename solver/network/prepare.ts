@@ -84,6 +84,13 @@ export function prepareNetwork(spec: NetworkSpec): PreparedNetwork {
   };
 }
 
+/** What was prepared, for other values of the same topology: as prepared anew, without looking at the topology again. */
+export function preparedFor(spec: NetworkSpec, network: PreparedNetwork): PreparedNetwork {
+  const { edges, conductance, fixed } = network;
+  conductances(spec, edges, conductance);
+  return { ...network, tree: balanceTree(edges, conductance, fixed) };
+}
+
 /** The nodes of a part that the caller knows (no far ends of tubing), ascending. */
 export function nodesOfPart(nodeCount: number, parts: Parts, part: number): Int32Array {
   const own: number[] = [];

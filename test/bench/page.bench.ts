@@ -1,11 +1,12 @@
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import type { CDPSession, Page } from 'playwright-core';
+import type { CDPSession } from 'playwright-core';
 import { splitTree } from '../../renderer/makers/split-tree.ts';
 import { emptyChip } from '../../renderer/testing/chips.ts';
 import { writeDescription } from '../../solver/chip/description-write.ts';
 import { answered, type Sitting, sit } from '../page/desk.ts';
+import { STAGES, stepped } from './page-stages.ts';
 import { memory, starting } from './page-start.ts';
 import type { BenchRow } from './row.ts';
 
@@ -135,37 +136,6 @@ async function perFrame(sitting: Sitting, work: () => Promise<unknown>): Promise
   return spent / Math.max(1, frames);
 }
 
-/** ms from a step of a field to the changed words of the five answers, in the page. */
-const stepped = (page: Page, label: string, times: number): Promise<number[]> =>
-  page.evaluate(
-    async ([name, count]) => {
-      const bar = document.querySelector('.verdicts')!;
-      const out: number[] = [];
-      for (let i = 0; i < count; i += 1) {
-        const input = [...document.querySelectorAll<HTMLInputElement>('.card .field input')].find(
-          (element) => element.labels?.[0]?.textContent === name,
-        )!;
-        const began = performance.now();
-        const changed = new Promise<number>((done) => {
-          const watch = new MutationObserver((records) => {
-            // the marking as busy is no answer
-            if (!records.some(({ type }) => type !== 'attributes')) return;
-            watch.disconnect();
-            done(performance.now());
-          });
-          watch.observe(bar, { childList: true, characterData: true, subtree: true });
-          setTimeout(() => done(Number.NaN), 5000);
-        });
-        input.dispatchEvent(new KeyboardEvent('keydown', { key: 'ArrowUp', bubbles: true }));
-        out.push((await changed) - began);
-        // the junctions of the step before are out of the way
-        await new Promise((done) => setTimeout(done, 250));
-      }
-      return out;
-    },
-    [label, times] as const,
-  );
-
 async function answers(folder: string): Promise<BenchRow[]> {
   const file = join(folder, 'tree.json');
   writeFileSync(file, treeChip());
@@ -183,7 +153,8 @@ async function answers(folder: string): Promise<BenchRow[]> {
       await page.getByRole('gridcell', { name, exact: true }).click();
       await page.getByLabel(label, { exact: true }).focus();
       await stepped(page, label, 3);
-      const times = (await stepped(page, label, 21)).filter(Number.isFinite);
+      const steps = (await stepped(page, label, 21)).filter(({ total }) => Number.isFinite(total));
+      const times = steps.map(({ total }) => total);
       rows.push(
         {
           what: `127 channels, ${what} changed: to the new verdict`,
@@ -193,6 +164,14 @@ async function answers(folder: string): Promise<BenchRow[]> {
           target: FRAME,
         },
         { what: `  the slowest twentieth`, median: high(times), unit: 'ms', runs: times.length, target: 50 },
+        ...STAGES.map(
+          ([stage, what]): BenchRow => ({
+            what: `    ${what}`,
+            median: median(steps.map((step) => step[stage])),
+            unit: 'ms',
+            runs: steps.length,
+          }),
+        ),
       );
       await page.getByRole('searchbox').fill('');
     }
@@ -225,6 +204,7 @@ async function dragging(folder: string): Promise<BenchRow[]> {
     });
     const follow: number[] = [];
     const settle: number[] = [];
+    const rested: number[] = [];
     for (let i = 0; i < 9; i += 1) {
       // one step of the hand, until the preview of the junction there is in the answer
       const seen = page.evaluate(
@@ -250,41 +230,46 @@ async function dragging(folder: string): Promise<BenchRow[]> {
       await page.mouse.move(at.x + x, at.y + x / 3);
       follow.push(await seen);
     }
-    for (let i = 0; i < 5; i += 1) {
-      const solved = page.evaluate(
-        () =>
-          new Promise<number>((done) => {
-            let began = 0;
-            addEventListener(
-              'pointerup',
-              () => {
-                began = performance.now();
-              },
-              { once: true, capture: true },
-            );
-            const bar = document.querySelector('.verdicts')!;
-            const watch = new MutationObserver(() => {
-              if (began === 0 || bar.getAttribute('aria-busy') !== 'false') return;
-              watch.disconnect();
-              done(performance.now() - began);
-            });
-            watch.observe(bar, { attributes: true, childList: true, characterData: true, subtree: true });
-            setTimeout(() => done(Number.NaN), 5000);
-          }),
-      );
-      await page.waitForTimeout(40);
-      await page.mouse.up();
-      settle.push(await solved);
-      await page.mouse.down();
-      x += 7;
-      await page.mouse.move(at.x + x, at.y + x / 3, { steps: 4 });
-      await page.waitForTimeout(100);
+    /** ms that the hand rests before it lets go. */
+    for (const [rest, settled] of [
+      [0, settle],
+      [150, rested],
+    ] as const) {
+      for (let i = 0; i < 5; i += 1) {
+        const solved = page.evaluate(
+          () =>
+            new Promise<number>((done) => {
+              let began = 0;
+              addEventListener(
+                'pointerup',
+                () => {
+                  began = performance.now();
+                },
+                { once: true, capture: true },
+              );
+              const bar = document.querySelector('.verdicts')!;
+              const watch = new MutationObserver(() => {
+                if (began === 0 || bar.getAttribute('aria-busy') !== 'false') return;
+                watch.disconnect();
+                done(performance.now() - began);
+              });
+              watch.observe(bar, { attributes: true, childList: true, characterData: true, subtree: true });
+              setTimeout(() => done(Number.NaN), 5000);
+            }),
+        );
+        // beyond the steps of the grid
+        x += 24;
+        await page.mouse.move(at.x + x, at.y + x / 3, { steps: 4 });
+        if (rest > 0) await page.waitForTimeout(rest);
+        await page.mouse.up();
+        settled.push(await solved);
+        await page.mouse.down();
+      }
     }
     await page.mouse.up();
-    const [followed, settled] = [follow, settle].map((values) => values.filter(Number.isFinite)) as [
-      number[],
-      number[],
-    ];
+    const [followed, settled, afterRest] = [follow, settle, rested].map((values) =>
+      values.filter(Number.isFinite),
+    ) as [number[], number[], number[]];
     return [
       {
         what: 'junction of four arms dragged: script per frame',
@@ -305,10 +290,17 @@ async function dragging(folder: string): Promise<BenchRow[]> {
         target: 2,
       },
       {
-        what: '  solved after the hand stops',
+        what: '  solved after the hand stops and at once lets go',
         median: median(settled),
         unit: 'ms',
         runs: settled.length,
+        target: 100,
+      },
+      {
+        what: '  solved after it lets go, having rested 150 ms',
+        median: median(afterRest),
+        unit: 'ms',
+        runs: afterRest.length,
         target: 100,
       },
     ];
