@@ -1,5 +1,6 @@
 import type { Result } from '../../solver/chip/result.ts';
 import { formatQuantity } from '../../solver/chip/units-format.ts';
+import { bandColumn } from './band-column.ts';
 import { type Column, NONE, tableLines } from './table.ts';
 
 /** Routes that carry most: as many as a terminal shows at a glance. */
@@ -28,6 +29,10 @@ export function routesText(result: Result): string[] {
       kind: 'stress',
       values: shown.map(({ wallHugging }) => wallHugging?.peakShear ?? null),
     },
+    ...bandColumn(
+      '±',
+      shown.map(({ wallHugging, band }) => wallHugging && band?.wall),
+    ),
   ];
   return [
     'Routes',
@@ -35,10 +40,22 @@ export function routesText(result: Result): string[] {
       { head: 'from', words: shown.map(({ from }) => from) },
       { head: 'to', words: shown.map(({ to }) => to) },
       { head: 'share', kind: 'share', values: shown.map(({ share }) => share) },
+      ...bandColumn(
+        '±',
+        shown.map(({ band }) => band?.share),
+      ),
       { head: 'residence time', kind: 'time', values: shown.map(({ residenceTime }) => residenceTime) },
       { head: 'fastest 1 %', kind: 'time', values: shown.map(({ fastest }) => fastest ?? null) },
       { head: 'slowest 1 %', kind: 'time', values: shown.map(({ slowest }) => slowest ?? null) },
+      ...bandColumn(
+        '±',
+        shown.map(({ band }) => band?.time),
+      ),
       { head: 'peak wall shear', kind: 'stress', values: shown.map(({ peakWallShear }) => peakWallShear) },
+      ...bandColumn(
+        '±',
+        shown.map(({ band, peakWallShear }) => (peakWallShear === null ? null : band?.shear)),
+      ),
       { head: 'at', words: shown.map(({ peakAt }) => peakAt || NONE) },
       ...(shown.some(({ wallHugging }) => wallHugging !== undefined) ? along : []),
     ]),
@@ -59,6 +76,10 @@ export function damageText(result: Result): string[] {
       { head: 'to', words: rows.map(({ to }) => to) },
       { head: 'mean path', kind: 'share', values: rows.map(({ mean }) => mean) },
       { head: 'along the wall', kind: 'share', values: rows.map(({ wallHugging }) => wallHugging) },
+      ...bandColumn(
+        '±',
+        rows.map(({ band }) => band),
+      ),
     ]),
     ...more,
   ];

@@ -2,6 +2,7 @@ import type { Chip, Limit, Target } from '../../solver/chip/chip.ts';
 import type { Making, Result } from '../../solver/chip/result.ts';
 import { formatNumber, formatQuantity } from '../../solver/chip/units-format.ts';
 import type { Finding } from '../../solver/problem/finding.ts';
+import { bandColumn } from './band-column.ts';
 import { damageText, pumpsText, routesText } from './exposure-text.ts';
 import { type Column, NONE, tableLines } from './table.ts';
 import { wrapped } from './width.ts';
@@ -73,16 +74,10 @@ function ports({ ports: all }: Result): string[] {
       { head: 'pressure', kind: 'pressure', values: shown.map(({ pressure }) => pressure) },
       { head: 'flow in', kind: 'flow', values: shown.map(({ flow }) => flow) },
       { head: 'share', kind: 'share', values: shown.map(({ share }) => share) },
-      ...(shown.some(({ band }) => band)
-        ? ([
-            {
-              head: '± solving',
-              kind: 'share',
-              digits: 2,
-              values: shown.map(({ band }) => band?.share ?? null),
-            },
-          ] as const)
-        : []),
+      ...bandColumn(
+        '± solving',
+        shown.map(({ band }) => band?.share),
+      ),
       ...makingColumns(shown.map(({ making }) => making?.share)),
     ]),
     ...more,
@@ -104,6 +99,13 @@ function channels(result: Result): string[] {
       { head: 'pressure drop', kind: 'pressure', values: shown.map(({ pressureDrop }) => pressureDrop) },
       { head: 'mean velocity', kind: 'velocity', values: shown.map(({ meanVelocity }) => meanVelocity) },
       { head: 'peak wall shear', kind: 'stress', values: shown.map(({ peakWallShear }) => peakWallShear) },
+      // In large chips the worst of the chip stands for each.
+      ...bandColumn(
+        '± solving',
+        shown.map(({ band, peakWallShear }) =>
+          peakWallShear === null ? null : (band?.shear ?? result.bands?.shear),
+        ),
+      ),
       ...(shown.some(({ making }) => making)
         ? ([
             {
@@ -150,6 +152,10 @@ function targets(chip: Chip, { targets: all }: Result): string[] {
         values: shown.map(({ wanted, got }) => (got === null ? null : offBy(got, wanted))),
       },
       { head: 'within', kind: 'share', digits: 2, values: shown.map((_, i) => chip.targets[i]!.within) },
+      ...bandColumn(
+        '± solving',
+        shown.map(({ band }) => band),
+      ),
       ...(shown.some(({ making }) => making)
         ? ([
             {
@@ -182,6 +188,10 @@ function limits(chip: Chip, { limits: all }: Result): string[] {
       { head: 'limit', words: shown.map(({ name }) => name) },
       { head: 'bearable', words: shown.map(({ limit }, i) => limitFigure(limit, chip.limits[i]!)) },
       { head: 'worst', words: shown.map(({ worst }, i) => limitFigure(worst, chip.limits[i]!)) },
+      ...bandColumn(
+        '± solving',
+        shown.map(({ band }) => band),
+      ),
       { head: 'where', words: shown.map(({ where }) => where) },
       { head: '', words: shown.map(({ met }) => verdict(met)) },
     ]),

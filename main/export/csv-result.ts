@@ -26,6 +26,11 @@ const COLUMNS = {
   'making likely': '%',
   'making worst': '%',
   'making mostly': null,
+  '± share': '%',
+  '± flow': '%',
+  '± residence time': '%',
+  '± wall shear': '%',
+  '± got': '%',
 } as const;
 type Column = keyof typeof COLUMNS;
 
@@ -40,6 +45,24 @@ const makingCells = (making: Making | undefined): Row =>
         'making likely': making.likely,
         'making worst': making.worst,
         'making mostly': making.chief ? `${making.chief.what} of ${making.chief.id}` : null,
+      }
+    : {};
+
+interface Bands {
+  readonly share?: number;
+  readonly flow?: number;
+  readonly time?: number;
+  readonly shear?: number;
+}
+
+/** How far figures of the row may be off by what the solver knows of its errors, relative to them. */
+const bandCells = (band: Bands | undefined): Row =>
+  band
+    ? {
+        '± share': band.share ?? null,
+        '± flow': band.flow ?? null,
+        '± residence time': band.time ?? null,
+        '± wall shear': band.shear ?? null,
       }
     : {};
 
@@ -60,6 +83,7 @@ function pieceRow(id: string, piece: PieceResult): Row {
     'mean wall shear': piece.meanWallShear,
     'residence time': piece.residenceTime,
     ...makingCells(piece.making?.shear),
+    ...bandCells(piece.band),
   };
 }
 
@@ -74,6 +98,7 @@ function targetRow(target: Result['targets'][number], isShare: boolean): Row {
     wanted: spelt(target.wanted),
     got: spelt(target.got),
     met: target.met,
+    '± got': target.band ?? null,
     ...makingCells(target.making),
   };
 }
@@ -97,33 +122,36 @@ function cells(row: Row): Cell[] {
  */
 export function resultCsv(result: Result, isShare: (target: number) => boolean): string {
   const rows: Row[] = [
-    ...result.ports.map(({ id, pressure, flow, share, making }) => ({
+    ...result.ports.map(({ id, pressure, flow, share, making, band }) => ({
       kind: 'port',
       id,
       pressure,
       flow,
       share,
       ...makingCells(making?.share),
+      ...bandCells(band),
     })),
     ...result.channels.flatMap(({ id, pieces }) =>
       pieces.map((piece, i) => pieceRow(`${id}#${i + 1}`, piece)),
     ),
-    ...result.routes.map(({ from, to, share, residenceTime, peakWallShear }) => ({
+    ...result.routes.map(({ from, to, share, residenceTime, peakWallShear, band }) => ({
       kind: 'route',
       from,
       to,
       share,
       'peak wall shear': peakWallShear,
       'residence time': residenceTime,
+      ...bandCells(band),
     })),
     ...result.targets.map((target, i) => targetRow(target, isShare(i))),
-    ...result.limits.map(({ name, where, limit, worst, met }) => ({
+    ...result.limits.map(({ name, where, limit, worst, met, band }) => ({
       kind: 'limit (SI)',
       id: name,
       from: where,
       wanted: limit,
       got: worst,
       met,
+      '± got': band ?? null,
     })),
   ];
   const header = Object.entries(COLUMNS).map(([column, unit]) => (unit ? `${column} (${unit})` : column));

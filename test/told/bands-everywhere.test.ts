@@ -146,7 +146,7 @@ describe('each share and each wall shear bears its band', () => {
   test('in the plots', () => {
     const legs = legsOf(result, 'in', 'top');
     const { bands: along, names } = profileOf(result, legs);
-    along.forEach((band, i) => expect(band! > 1e-9).toBe(names[i] !== 'feed'));
+    for (const [i, band] of along.entries()) expect(band! > 1e-9).toBe(names[i] !== 'feed');
     for (const { band } of peaksAlong(result, legs)) expect(band).toBeGreaterThan(0);
     const { bands } = answersOf({ ok: true, result });
     expect(bands!.off).toBeGreaterThan(0);

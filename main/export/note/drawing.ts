@@ -2,6 +2,7 @@ import type { Chip, Point } from '../../../solver/chip/chip.ts';
 import type { Graph } from '../../../solver/chip/graph.ts';
 import { planPolygons } from '../../../solver/chip/plan.ts';
 import { inUnit, metres } from '../../../solver/chip/units.ts';
+import { keepOutItems } from './keep-outs.ts';
 import { channelLabels, holeLabels, type Labels } from './labels.ts';
 import type { At, Item, Mm, Picture } from './picture.ts';
 
@@ -64,6 +65,8 @@ export function planPicture(chip: Chip, graph: Graph, options: PlanOptions): Pic
     [frame.left, frame.bottom],
   ];
   items.push({ kind: 'shape', loops: [corners], closed: true, stroke: 'ink', weight: 0.25 });
+  const clear = keepOutItems(chip, options.layers, place);
+  items.push(...clear);
   const chordError = Math.max(1, CHORD / (scale * mm(1)));
   for (const layer of [...options.layers].reverse()) {
     for (const { outer, holes } of planPolygons(chip, graph, layer, {
@@ -100,7 +103,7 @@ export function planPicture(chip: Chip, graph: Graph, options: PlanOptions): Pic
     width: ROOM.left + wide + ROOM.right,
     height: ROOM.top + high + ROOM.bottom,
     items,
-    caption: `${options.caption} Scale ${scaleWords(scale)} on paper printed at 100 %.`,
+    caption: `${options.caption}${clear.length > 0 ? ' Hatched: to stay clear, no part of any mask.' : ''} Scale ${scaleWords(scale)} on paper printed at 100 %.`,
     alt: `Plan of ${options.layers.length === 1 ? `layer ${options.layers[0]}` : `${options.layers.length} layers`}, ${size(chip)}, ${chip.channels.length} channels, ports ${chip.ports.map(({ id }) => id).join(', ')}.`.slice(
       0,
       400,

@@ -1,12 +1,35 @@
 import type { Chip, Limit } from '../../../solver/chip/chip.ts';
 import type { Result } from '../../../solver/chip/result.ts';
 import { formatNumber, formatQuantity } from '../../../solver/chip/units-format.ts';
-import { figures, NONE, placed, plain, type Section, type Table, verdict, words } from './blocks.ts';
+import {
+  type Column,
+  figures,
+  NONE,
+  placed,
+  plain,
+  type Section,
+  type Table,
+  verdict,
+  words,
+} from './blocks.ts';
 
 /** Pressure and shear per route, and the limits. */
 
 const placesOf = ({ cells }: Result): Map<string, readonly [number, number]> =>
   new Map(cells.map(({ id, at }) => [id, at]));
+
+/** How far the solution may be off, beside what it is of; no column where that is not known. */
+function bands(head: string, all: readonly (number | null | undefined)[]): Column[] {
+  if (all.every((band) => band == null)) return [];
+  return [
+    figures(
+      head,
+      'share',
+      all.map((band) => band ?? null),
+      { digits: 2, unit: '%' },
+    ),
+  ];
+}
 
 export function routesTable(result: Result): Table {
   const { routes, ports } = result;
@@ -31,6 +54,10 @@ export function routesTable(result: Result): Table {
         'share',
         routes.map(({ share }) => share),
       ),
+      ...bands(
+        'share\u00a0±',
+        routes.map(({ band }) => band?.share),
+      ),
       figures(
         'pressure, end to end',
         'pressure',
@@ -41,10 +68,18 @@ export function routesTable(result: Result): Table {
         'time',
         routes.map(({ residenceTime }) => residenceTime),
       ),
+      ...bands(
+        'time\u00a0±',
+        routes.map(({ band }) => band?.time),
+      ),
       figures(
         'peak wall shear',
         'stress',
         routes.map(({ peakWallShear }) => peakWallShear),
+      ),
+      ...bands(
+        'shear\u00a0±',
+        routes.map(({ band, peakWallShear }) => (peakWallShear === null ? null : band?.shear)),
       ),
       words(
         'at',
@@ -62,12 +97,17 @@ export function routesTable(result: Result): Table {
               'stress',
               routes.map(({ wallHugging }) => wallHugging?.peakShear ?? null),
             ),
+            ...bands(
+              'wall\u00a0±',
+              routes.map(({ band, wallHugging }) => wallHugging && band?.wall),
+            ),
           ]
         : []),
     ],
-    ...(cell && {
-      foot: 'At the wall: of a ball of the diameter that the limits name, rolling along it.',
-    }),
+    foot: [
+      '±: how far the solution can be off, relative to the figure before it.',
+      ...(cell ? ['At the wall: of a ball of the diameter that the limits name, rolling along it.'] : []),
+    ].join(' '),
   };
 }
 
@@ -101,6 +141,10 @@ export function damageTable({ routes }: Result): Table | null {
         'along the wall',
         'share',
         rows.map(({ wallHugging }) => wallHugging),
+      ),
+      ...bands(
+        'numerics\u00a0±',
+        rows.map(({ band }) => band),
       ),
     ],
   };
@@ -144,6 +188,10 @@ export function limitsTable(chip: Chip, result: Result): Table {
       words(
         'worst',
         limits.map(({ worst }, i) => limitFigure(worst, chip.limits[i]!)),
+      ),
+      ...bands(
+        'numerics\u00a0±',
+        limits.map(({ band }) => band),
       ),
       words(
         'where',

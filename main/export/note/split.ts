@@ -41,7 +41,7 @@ function splitRows(chip: Chip, result: Result): SplitRow[] {
       got: entry.got,
       share: share ? entry.got : entry.got === null || total === 0 ? null : entry.got / total,
       flow: share ? (entry.got === null ? null : entry.got * total) : entry.got,
-      band: port?.band ? (share ? port.band.share : port.band.flow) : null,
+      band: entry.band ?? null,
       making: entry.making ?? null,
       met: entry.met,
     };
