@@ -140,7 +140,7 @@ withPoppler(
 );
 
 withPoppler(
-  'Greek, raised figures, right-to-left and very long names are in the text; a sign without a letter says its number',
+  'Greek, raised figures, right-to-left and very long names are in the text; a sign that no font has is shown by its number and copied as itself',
   async () => {
     const chip = awkwardChip();
     const result = await solve(chip, { junctions: 'ideal' });
@@ -154,7 +154,8 @@ withPoppler(
       const { han, ...set } = NAMES;
       for (const name of Object.values(set)) expect(text).toContain(joined(name.normalize('NFKC')));
       expect(han).toBe('流路');
-      expect(text).toContain('[U+6D41][U+8DEF]');
+      expect(text).toContain(han);
+      expect(text).toContain('standbytheirUnicodenumbers');
       for (const line of poppler('pdffonts', path).split('\n').slice(2).filter(Boolean))
         expect(line).toMatch(/yes yes yes /);
     }
@@ -170,6 +171,36 @@ withPoppler('a table over several pages repeats its head on each', async () => {
   expect(split.length).toBeGreaterThanOrEqual(3);
   expect(split.slice(1).every((page) => page.includes('Flow split, continued'))).toBe(true);
   for (let i = 1; i <= 150; i += 1) expect(pages.join('')).toMatch(new RegExp(`^ *out ${i} `, 'm'));
+});
+
+withPoppler('no heading stands alone at the end of a page, on either paper', async () => {
+  for (const file of ['eight-way-splitter.json', 'gravity-crossing.json', 'recirculation-loop.json']) {
+    const { chip, result } = await solvedDemo(file);
+    for (const paper of ['A4', 'letter'] as const) {
+      const note = noteFor(chip, result, paper);
+      const path = await written(`${file}-${paper}`, notePdf(note, paper));
+      const heads = new Set(note.sections.map(({ title }) => title));
+      for (const page of textOf(path, '-layout').split('\f')) {
+        const lines = page.split('\n').filter((line) => line.trim() !== '');
+        // the last line is the foot
+        expect(heads.has(lines.at(-2)?.trim() ?? ''), `${file} on ${paper}: ${lines.at(-2)}`).toBe(false);
+      }
+    }
+  }
+});
+
+withPoppler('figures in columns are of even width', async () => {
+  const { chip, result } = await solvedDemo('eight-way-splitter.json');
+  const path = await written('even', notePdf(noteFor(chip, result), 'A4'));
+  const boxes = [
+    ...poppler('pdftotext', '-bbox', path, '-').matchAll(
+      /xMin="([\d.]+)" yMin="[\d.]+" xMax="([\d.]+)" yMax="[\d.]+">(\d\d\.\d{3})</g,
+    ),
+  ];
+  // positions for drilling: the same digits or not, they take the same room
+  const widths = boxes.map(([, from, to]) => Number(to) - Number(from));
+  expect(new Set(boxes.map(([, , , text]) => text)).size).toBeGreaterThan(5);
+  expect(Math.max(...widths) - Math.min(...widths)).toBeLessThan(0.02);
 });
 
 withPoppler('the flow-split table alone is one page of its own', async () => {

@@ -6,7 +6,7 @@ import { fileURLToPath } from 'node:url';
 /** The typefaces of the note, by the files that come with the program. */
 
 /** Faces as they are asked for. */
-export const FACES = ['text', 'text strong', 'figure', 'figure strong'] as const;
+export const FACES = ['text', 'text strong', 'figure', 'figure strong', 'tabular', 'tabular strong'] as const;
 export type Face = (typeof FACES)[number];
 
 const PACKAGES = {
@@ -34,6 +34,9 @@ export const CHAINS: Readonly<Record<Face, readonly FontFile[]>> = {
   'text strong': [...own('literata', 600), fallback('DejaVuSans-Bold.ttf')],
   figure: [...own('commissioner', 400), fallback('DejaVuSans.ttf')],
   'figure strong': [...own('commissioner', 600), fallback('DejaVuSans-Bold.ttf')],
+  // Columns of figures: Commissioner has none of even width.
+  tabular: [...own('literata', 400), fallback('DejaVuSans.ttf')],
+  'tabular strong': [...own('literata', 600), fallback('DejaVuSans-Bold.ttf')],
 };
 
 const web = (from: 'literata' | 'commissioner', weight: 400 | 600): FontFile => ({

@@ -60,7 +60,8 @@ thead th{vertical-align:bottom;border-bottom:1px solid ${COLOURS.ink}}
 tbody th,tbody td{border-bottom:1px solid ${COLOURS.line}}
 tbody tr{break-inside:avoid}
 tfoot td{border:0;padding-top:5px}
-.f{text-align:right;font-variant-numeric:tabular-nums;white-space:nowrap}
+.f{text-align:right;white-space:nowrap}
+td.f{font-family:"Literata",Georgia,serif;font-variant-numeric:tabular-nums lining-nums}
 .w td,.w th{height:34px}
 tr.missed th:first-child{box-shadow:-6px 0 0 -3px ${COLOURS.ink}}
 .no{color:${COLOURS.alarm};font-weight:600}

@@ -30,8 +30,12 @@ const MOST_TRIED = 4000;
 const HOLE_SIZE: Mm = 2.5;
 const CHANNEL_SIZE: Mm = 2.1;
 
+/** Scripts that no face of the note has: their signs stand by their numbers, some columns more than they would take. */
+const NUMBERED = /[\p{Script=Han}\p{Script=Hiragana}\p{Script=Katakana}\p{Script=Hangul}]/gu;
+const MORE = 6;
 /** About as wide as the type sets it: mean advance of the figures' face. */
-const widthOf = (text: string, size: Mm): Mm => textWidth(text) * size * 0.56;
+const widthOf = (text: string, size: Mm): Mm =>
+  (textWidth(text) + MORE * (text.match(NUMBERED)?.length ?? 0)) * size * 0.56;
 
 const apart = (a: Box, b: Box): boolean =>
   a.right <= b.left || b.right <= a.left || a.bottom <= b.top || b.bottom <= a.top;

@@ -12,9 +12,19 @@ export interface Piece {
   readonly font: FontFile;
   /** In reading order: the font itself lays a right-to-left run out. */
   readonly text: string;
-  readonly rightToLeft: boolean;
+  readonly features: Features | undefined;
+  /** What the text stands for, where no font has it: a reader that copies it gets that. */
+  readonly actual: string | undefined;
   /** In ems. */
   readonly width: number;
+}
+
+type Features = PDFKit.Mixins.OpenTypeFeatures[];
+
+/** Signs as they are written, and those that they stand for. */
+interface Written {
+  readonly text: string;
+  readonly actual: string | undefined;
 }
 
 interface Font {
@@ -38,9 +48,13 @@ const plainFont = (font: FontFile): Uint8Array => {
 const parsed = new Map<string, object>();
 
 /** Right-to-left runs are laid out whole: asking for a feature keeps pdfkit from laying out word by word. */
-const WHOLE: PDFKit.Mixins.OpenTypeFeatures[] = ['kern'];
+const WHOLE: Features = ['kern'];
+/** Figures of even width, in columns. */
+const TABULAR: Features = ['tnum'];
 
 export class Fonts {
+  /** Whether any sign was written by its number. */
+  numbered = false;
   readonly #doc: PDFKit.PDFDocument;
   readonly #loaded = new Map<string, Font>();
   readonly #choice = new Map<string, FontFile | null>();
@@ -91,35 +105,52 @@ export class Fonts {
   }
 
   #shape(text: string, face: Face): Piece[] {
-    const clean = this.#writable(text, face);
+    const parts = this.#writable(text, face);
+    const clean = parts.map((part) => part.text).join('');
     const levels = RIGHT_TO_LEFT.test(clean) ? bidi.getEmbeddingLevels(clean, 'ltr').levels : null;
-    const runs: { font: FontFile; text: string; level: number }[] = [];
+    const runs: { font: FontFile; text: string; level: number; part: Written }[] = [];
     let at = 0;
+    let [k, end] = [0, parts[0]?.text.length ?? 0];
     for (const { text: sign, font } of this.#fonted(clean, face)) {
       const level = levels?.[at] ?? 0;
+      while (at >= end && k + 1 < parts.length) {
+        k += 1;
+        end += parts[k]!.text.length;
+      }
+      const part = parts[k]!;
       at += sign.length;
       const last = runs.at(-1);
       const seen = level % 2 === 1 ? (bidi.getMirroredCharacter(sign) ?? sign) : sign;
-      if (last && last.level === level && last.font === font) last.text += seen;
-      else runs.push({ font, text: seen, level });
+      if (last && last.level === level && last.font === font && last.part === part) last.text += seen;
+      else runs.push({ font, text: seen, level, part });
     }
-    return inOrder(runs).map(({ font, text: run, level }): Piece => {
-      const rightToLeft = level % 2 === 1;
+    return inOrder(runs).map(({ font, text: run, level, part: { actual } }): Piece => {
+      const even = face.startsWith('tabular') && font.from === 'literata';
+      const features = level % 2 === 1 ? WHOLE : even ? TABULAR : undefined;
       this.#use(font);
       this.#doc.fontSize(1000);
-      const width = this.#doc.widthOfString(run, rightToLeft ? { features: WHOLE } : {}) / 1000;
-      return { font, text: run, rightToLeft, width };
+      const width = this.#doc.widthOfString(run, features ? { features } : {}) / 1000;
+      return { font, text: run, features, actual, width };
     });
   }
 
-  /** Signs that no font has, by their number: none is dropped, none becomes another. */
-  #writable(text: string, face: Face): string {
-    let clean = '';
-    for (const sign of text)
-      clean += this.#fontOf(face, sign)
-        ? sign
-        : `[U+${sign.codePointAt(0)!.toString(16).toUpperCase().padStart(4, '0')}]`;
-    return clean;
+  /** Signs that no font has, by their numbers, those that follow one another together: none is dropped, none becomes another. */
+  #writable(text: string, face: Face): Written[] {
+    const parts: { text: string; actual: string | undefined }[] = [];
+    for (const sign of text) {
+      const known = this.#fontOf(face, sign) !== null;
+      const last = parts.at(-1);
+      const number = `U+${sign.codePointAt(0)!.toString(16).toUpperCase().padStart(4, '0')}`;
+      if (known) {
+        if (last && last.actual === undefined) last.text += sign;
+        else parts.push({ text: sign, actual: undefined });
+      } else if (last?.actual !== undefined) {
+        last.text = `${last.text.slice(0, -1)} ${number}]`;
+        last.actual += sign;
+      } else parts.push({ text: `[${number}]`, actual: sign });
+    }
+    if (parts.some(({ actual }) => actual !== undefined)) this.numbered = true;
+    return parts;
   }
 
   *#fonted(text: string, face: Face): Generator<{ text: string; font: FontFile }> {
@@ -165,12 +196,15 @@ export class Fonts {
     let at = x;
     for (const piece of this.pieces(text, face)) {
       if (piece.text.trim() !== '') {
+        const { features, actual } = piece;
         this.#use(piece.font);
+        if (actual !== undefined) this.#doc.markContent('Span', { actual });
         this.#doc.fontSize(size).text(piece.text, at, y, {
           lineBreak: false,
           baseline: 'alphabetic',
-          ...(piece.rightToLeft && { features: WHOLE }),
+          ...(features && { features }),
         });
+        if (actual !== undefined) this.#doc.endMarkedContent();
       }
       at += piece.width * size;
     }

@@ -33,7 +33,7 @@ export interface StructOptions {
 export type Element = PDFKit.PDFStructureElement;
 
 export interface Style {
-  readonly face: 'text' | 'figure';
+  readonly face: 'text' | 'figure' | 'tabular';
   readonly size: number;
   readonly leading: number;
   readonly colour?: Colour;
@@ -228,7 +228,7 @@ export class Sheet {
   }
 }
 
-function wordsOf(runs: readonly Run[], face: 'text' | 'figure'): Word[] {
+function wordsOf(runs: readonly Run[], face: 'text' | 'figure' | 'tabular'): Word[] {
   const found: Word[] = [];
   let spaced = false;
   for (const run of runs) {

@@ -1,4 +1,5 @@
 import { type Column, type Table, unitOf } from './blocks.ts';
+import type { Face } from './font-files.ts';
 import type { Element, Line, Sheet, Style } from './pdf-page.ts';
 
 /** Tables: few rules, figures aligned on the point, the unit in the head, heads repeated on every page. */
@@ -42,7 +43,7 @@ function atPoint(text: string): readonly [string, string] {
 function wantOf(sheet: Sheet, column: Column, size: number): Want & { before: number; after: number } {
   const { fonts } = sheet;
   const strong = column.kind === 'verdict' ? 'figure strong' : 'figure';
-  const widest = (texts: readonly string[], face: 'figure' | 'figure strong', at: number): number =>
+  const widest = (texts: readonly string[], face: Face, at: number): number =>
     texts.reduce((most, text) => Math.max(most, fonts.width(text, face, at)), 0);
   const headSize = (HEAD.size / BODY.size) * size;
   const headWords = [...column.head.split(' '), unitOf(column)];
@@ -53,12 +54,12 @@ function wantOf(sheet: Sheet, column: Column, size: number): Want & { before: nu
     const parts = texts.map(atPoint);
     const before = widest(
       parts.map(([whole]) => whole),
-      'figure',
+      'tabular',
       size,
     );
     const after = widest(
       parts.map(([, rest]) => rest),
-      'figure',
+      'tabular',
       size,
     );
     // a head of more than two or three lines reads badly, however short its figures
@@ -120,6 +121,43 @@ function startOf(sheet: Sheet, set: Set, line: Line, size: number): number {
   return x + width - block + before - sheet.fonts.width(whole, face, size);
 }
 
+/** A table with its columns and rows set. */
+interface Laid {
+  readonly sheet: Sheet;
+  readonly sets: readonly Set[];
+  readonly size: number;
+  readonly style: Style;
+  readonly rows: readonly Row[];
+  readonly headLines: number;
+  readonly units: boolean;
+  /** Of the head with the first rows, which are not parted. */
+  readonly least: number;
+}
+
+const known = new WeakMap<Table, Laid>();
+
+function laidOut(sheet: Sheet, table: Table): Laid {
+  const before = known.get(table);
+  if (before?.sheet === sheet) return before;
+  const { sets, size } = setOf(sheet, table);
+  const style: Style = { ...BODY, size, leading: (BODY.leading / BODY.size) * size };
+  const rows = rowsOf(sheet, table, sets, style);
+  const headLines = Math.max(...sets.map(({ head }) => head.length));
+  const units = sets.some(({ column }) => unitOf(column) !== '');
+  const headHeight = (headLines + (units ? 1 : 0)) * HEAD.leading + 2 * PAD;
+  const least = headHeight + rows.slice(0, 2).reduce((sum, { height }) => sum + height, 0);
+  const laid = { sheet, sets, size, style, rows, headLines, units, least };
+  known.set(table, laid);
+  return laid;
+}
+
+const titleTall = (titled: boolean): number => (titled ? TITLE.leading + 2 : 0);
+
+/** Height of what stays together at the start of a table, points. */
+export function leastTall(sheet: Sheet, table: Table, titled: boolean): number {
+  return table.rows === 0 ? 0 : titleTall(titled) + laidOut(sheet, table).least;
+}
+
 /** Sets a table; returns when the sheet's cursor stands below it. */
 export function drawTable(
   sheet: Sheet,
@@ -128,15 +166,8 @@ export function drawTable(
   { lead, titled }: { readonly lead: number; readonly titled: boolean },
 ): void {
   if (table.rows === 0) return;
-  const { sets, size } = setOf(sheet, table);
-  const style: Style = { ...BODY, size, leading: (BODY.leading / BODY.size) * size };
-  const rows = rowsOf(sheet, table, sets, style);
-  const headLines = Math.max(...sets.map(({ head }) => head.length));
-  const units = sets.some(({ column }) => unitOf(column) !== '');
-  const headHeight = (headLines + (units ? 1 : 0)) * HEAD.leading + 2 * PAD;
-  const firstRows = rows.slice(0, 2).reduce((sum, { height }) => sum + height, 0);
-  const titleHeight = titled ? TITLE.leading + 2 : 0;
-  if (!sheet.need(lead + titleHeight + headHeight + firstRows) && !sheet.top) sheet.y += lead;
+  const { sets, size, style, rows, headLines, units, least } = laidOut(sheet, table);
+  if (!sheet.need(lead + titleTall(titled) + least) && !sheet.top) sheet.y += lead;
   if (titled) sheet.paragraph(parent, 'P', [{ strong: table.title }], TITLE);
   const foot = [
     table.more ? `And ${table.more.toLocaleString('en')} more rows in the comma-separated values.` : '',
@@ -181,7 +212,8 @@ function rowsOf(sheet: Sheet, { rows, columns }: Table, sets: readonly Set[], st
       const text = column.texts[i]!;
       if (text === '') return [];
       const strong = column.kind === 'verdict' && column.cells[i] === false;
-      return sheet.lines([strong ? { strong: text } : text], style, sets[c]!.width);
+      const face = column.kind === 'figures' ? 'tabular' : style.face;
+      return sheet.lines([strong ? { strong: text } : text], { ...style, face }, sets[c]!.width);
     });
     const lines = Math.max(1, ...cells.map((cell) => cell.length));
     const height = lines * style.leading + 2 * PAD;

@@ -3,7 +3,7 @@ import type { Note } from './content.ts';
 import type { Paper } from './drawing.ts';
 import { COLOURS, type Element, MARGIN, PAPERS, type PaperName, Sheet, type Style } from './pdf-page.ts';
 import { drawPictures } from './pdf-picture.ts';
-import { drawTable } from './pdf-table.ts';
+import { drawTable, leastTall } from './pdf-table.ts';
 import { MM_PER_POINT } from './picture.ts';
 
 /** The note as PDF: vector, fonts embedded as subsets, tagged, with bookmarks. */
@@ -22,6 +22,8 @@ const NAMES_WIDE = 118;
 const BULLET = 12;
 /** What stands with a heading so that it is not left alone at the end of a page. */
 const WITH_HEADING = 58;
+/** A line to sign on. */
+const SIGNED = 30;
 
 /** What a drawing may take of a page, mm. */
 export function paperOf(name: PaperName): Paper {
@@ -31,6 +33,9 @@ export function paperOf(name: PaperName): Paper {
     height: (height - MARGIN.top - MARGIN.bottom) * MM_PER_POINT * 0.62,
   };
 }
+
+const NUMBERED =
+  'Signs that the typefaces of this document do not have stand by their Unicode numbers, as in [U+0000]. Copied or searched for, they are the signs themselves; the same note as HTML shows them in the typefaces of whoever reads it.';
 
 /** The whole document as bytes. */
 export async function notePdf(note: Note, paper: PaperName): Promise<Uint8Array> {
@@ -51,6 +56,10 @@ export async function notePdf(note: Note, paper: PaperName): Promise<Uint8Array>
   sheet.doc.addStructure(root);
   opening(sheet, root, note);
   for (const section of note.sections) drawSection(sheet, root, section, note.sections.length > 1);
+  if (sheet.fonts.numbered) {
+    sheet.y += 6;
+    sheet.paragraph(root, 'P', [NUMBERED], SOFT, { width: Math.min(sheet.width, 450) });
+  }
   root.end();
   feet(sheet, note);
   sheet.doc.end();
@@ -68,10 +77,19 @@ function opening(sheet: Sheet, root: Element, { title, subtitle, remark }: Note)
   sheet.y += 4;
 }
 
+/** The height of what is not parted over pages, points; a heading stays with it. */
+function wholeOf(sheet: Sheet, block: Block, heading: string): number {
+  if (block.kind === 'table') return leastTall(sheet, block.table, block.table.title !== heading) + 2;
+  if (block.kind === 'lines') return SIGNED * block.rows.length + 14;
+  if (block.kind !== 'pictures') return 0;
+  return Math.max(...block.pictures.map(({ height }) => height / MM_PER_POINT)) + 40;
+}
+
 function drawSection(sheet: Sheet, root: Element, { title, blocks }: Section, headed: boolean): void {
   const section = sheet.begin(root, 'Sect');
   if (headed) {
-    if (!sheet.need(20 + HEADING.leading + WITH_HEADING) && !sheet.top) sheet.y += 16;
+    const least = Math.max(WITH_HEADING, blocks[0] ? wholeOf(sheet, blocks[0], title) : 0);
+    if (!sheet.need(20 + HEADING.leading + least) && !sheet.top) sheet.y += 16;
     sheet.doc.outline.addItem(title, { top: Math.max(0, sheet.y - 8) } as object);
     sheet.paragraph(section, 'H2', [{ strong: title }], HEADING);
     sheet.y += 3;
@@ -157,7 +175,7 @@ function list(sheet: Sheet, section: Element, items: Extract<Block, { kind: 'lis
 
 /** Rows with a rule to write on under each head. */
 function lines(sheet: Sheet, section: Element, { rows, heads }: Extract<Block, { kind: 'lines' }>): void {
-  const tall = 30;
+  const tall = SIGNED;
   const name = 70;
   const shares = heads.map((_, i) => (i === heads.length - 1 ? 1.6 : 1));
   const all = shares.reduce((sum, share) => sum + share, 0);
