@@ -149,7 +149,7 @@ function Results({
   readonly result: Result | null;
 }) {
   if (!solved || solved.pieces.length === 0)
-    return <p className="soft">Its flow comes with the first answer.</p>;
+    return <Figure label="Flow" figure="comes with the first answer" />;
   const { pieces } = solved;
   const sum = (pick: (piece: (typeof pieces)[number]) => number | null): number | null =>
     pieces.reduce<number | null>((total, piece) => {

@@ -3,7 +3,8 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { Page } from 'playwright-core';
 import { expect, test } from 'vitest';
-import { placeOnPage, sit } from './desk.ts';
+import { dxf, outline } from '../import/read.ts';
+import { answered, placeOnPage, sit } from './desk.ts';
 import { EVERYTHING } from './everything.ts';
 
 /**
@@ -22,11 +23,17 @@ async function clickAt(page: Page, x: number, y: number): Promise<void> {
 }
 
 /** Every field of the card now open, nonsense typed into it; the labels of those that took it wrongly. */
-async function fillAll(page: Page): Promise<{ readonly fields: string[]; readonly wrong: string[] }> {
-  await page.locator('.card details').evaluateAll((all) => {
+async function fillAll(
+  page: Page,
+  within = '.card',
+): Promise<{ readonly fields: string[]; readonly wrong: string[] }> {
+  await page.locator(`${within} details`).evaluateAll((all) => {
     for (const element of all) element.setAttribute('open', '');
   });
-  const inputs = page.locator('.card .field input:not([readonly]), .card .field textarea');
+  const inputs = page.locator(
+    // a name that may be left open takes any text
+    `${within} .field input:not([readonly], [type="range"], #new-name), ${within} .field textarea`,
+  );
   const fields: string[] = [];
   const wrong: string[] = [];
   const count = await inputs.count();
@@ -37,7 +44,7 @@ async function fillAll(page: Page): Promise<{ readonly fields: string[]; readonl
     );
     fields.push(label);
     // any text is a name but none
-    const text = label === 'Name' ? '' : NONSENSE[i % NONSENSE.length]!;
+    const text = label === 'Name' || label === 'Layer of the chip' ? '' : NONSENSE[i % NONSENSE.length]!;
     await input.fill(text);
     await input.blur();
     const after = await input.evaluate((element) => {
@@ -101,4 +108,163 @@ test('nonsense in every field: kept, explained, never applied, never lost', asyn
     await sitting.end();
     rmSync(folder, { recursive: true, force: true });
   }
-}, 200_000);
+}, 400_000);
+
+/** The chip as the page holds it: its description by way of the clipboard, and what could be undone. */
+async function chipNow(page: Page): Promise<string> {
+  await page.locator('.sheet-surface').first().focus();
+  await page.keyboard.press('Control+a');
+  await page.evaluate(() => navigator.clipboard.writeText(''));
+  await page.keyboard.press('Control+c');
+  await page.waitForFunction(async () => (await navigator.clipboard.readText()).length > 0);
+  const text = await page.evaluate(() => navigator.clipboard.readText());
+  return `${text} ${await page.locator('.header-verbs button').first().getAttribute('title')}`;
+}
+
+test('nonsense in the fields of every maker: kept, explained, never applied, never lost', async () => {
+  const sitting = await sit();
+  const { page } = sitting;
+  const sheet = page.locator('.sheet-surface').first();
+  /** What makes it, its box in mm, and how many fields it has beside those of the part. */
+  const MAKERS = [
+    { key: 'r', title: 'Serpentine', from: '5, 80', to: '35, 65', fields: 5 },
+    { key: 't', title: 'Splitting tree', from: '45, 80', to: '75, 60', fields: 5 },
+    { key: 'g', title: 'Gradient tree', from: '5, 55', to: '60, 35', fields: 6 },
+    { key: 'w', title: 'Row of chambers', from: '5, 30', to: '60, 25', fields: 5 },
+    { key: 'o', title: 'Posts', from: '65, 30', to: '75, 25', fields: 5 },
+  ] as const;
+  try {
+    await page.getByLabel('Size').selectOption('plate');
+    await page.getByRole('button', { name: 'Begin', exact: true }).click();
+    await page.locator('.frame').waitFor();
+    for (const { key, title, from, to, fields: wanted } of MAKERS) {
+      await sheet.focus();
+      await page.keyboard.press(key);
+      await page.keyboard.type(from);
+      await page.keyboard.press('Enter');
+      await page.keyboard.type(to);
+      await page.keyboard.press('Enter');
+      const maker = page.locator('.card').getByRole('region', { name: title });
+      await maker.waitFor();
+      expect(await maker.locator('input').count(), title).toBe(wanted);
+      await answered(page);
+      const chosen = await page.locator('.card h2').textContent();
+      const before = await chipNow(page);
+      // back to it by its table
+      const tab = await page.getByRole('gridcell', { name: chosen!, exact: true }).count();
+      if (tab === 0) await page.getByRole('tab', { name: /Channels/ }).click();
+      await page.getByLabel('Filter the table').fill(chosen!);
+      await page.getByRole('gridcell', { name: chosen!, exact: true }).first().click();
+      await maker.waitFor();
+      const { fields, wrong } = await fillAll(page);
+      expect(wrong, title).toEqual([]);
+      expect(fields.length, title).toBeGreaterThanOrEqual(wanted);
+      // what stands in the fields stays there while the rest of the page goes on
+      const kept = await maker
+        .locator('input')
+        .evaluateAll((all) => all.map((one) => (one as HTMLInputElement).value));
+      await page.getByRole('tab', { name: /Findings/ }).click();
+      await answered(page);
+      expect(
+        await maker.locator('input').evaluateAll((all) => all.map((one) => (one as HTMLInputElement).value)),
+        title,
+      ).toEqual(kept);
+      await page.getByLabel('Filter the table').fill('');
+      expect(await chipNow(page), title).toBe(before);
+    }
+    expect(sitting.errors).toEqual([]);
+  } finally {
+    await sitting.end();
+  }
+}, 400_000);
+
+test('nonsense in the fields of every panel: repeating, plots, masks, bringing in, measurements, a new chip', async () => {
+  const folder = mkdtempSync(join(tmpdir(), 'channelwright-panels-'));
+  const drawing = join(folder, 'lane.dxf');
+  writeFileSync(
+    drawing,
+    dxf(
+      outline([
+        [2000, 6000],
+        [60000, 6000],
+        [60000, 6300],
+        [2000, 6300],
+      ]),
+      [],
+      0,
+    ),
+  );
+  const sitting = await sit();
+  const { page } = sitting;
+  const sheet = page.locator('.sheet-surface').first();
+  const command = async (words: string): Promise<void> => {
+    await sheet.focus();
+    await page.keyboard.press('/');
+    await page.keyboard.type(words);
+    await page.keyboard.press('Enter');
+  };
+  try {
+    // the start has fields of its own
+    await page.getByLabel('Size').selectOption('own');
+    const start = await fillAll(page, '.start');
+    expect(start.wrong, 'start').toEqual([]);
+    expect(start.fields).toEqual(['Width', 'Height', 'Depth of its channels']);
+    await page.getByRole('button', { name: /Eight-way/ }).click();
+    await page.locator('.frame').waitFor();
+    await answered(page);
+    const before = await chipNow(page);
+    const panels: Readonly<Record<string, () => Promise<unknown>>> = {
+      repeat: () => command('array and offset'),
+      plots: async () => {
+        await command('plots');
+        await page.getByLabel('Sweep the').waitFor();
+      },
+      'hand over': async () => {
+        await command('hand over');
+        // with a wafer there are more
+        await page.getByLabel('Wafer diameter').fill('100 mm');
+        await page.getByLabel('Wafer diameter').press('Enter');
+        await page.getByLabel('Rim kept free').waitFor();
+      },
+      'bring in': async () => {
+        await command('bring in');
+        await page.getByLabel('A drawing to bring in').setInputFiles(drawing);
+        await page.getByLabel('Width of bare lines').waitFor();
+      },
+    };
+    const seen: Record<string, number> = {};
+    for (const [name, open] of Object.entries(panels)) {
+      await sheet.focus();
+      await page.keyboard.press('Control+a');
+      await open();
+      const { fields, wrong } = await fillAll(page);
+      seen[name] = fields.length;
+      expect(wrong, name).toEqual([]);
+      await page.keyboard.press('Escape');
+    }
+    expect(seen).toEqual({ repeat: 4, plots: 2, 'hand over': 7, 'bring in': 4 });
+    // measurements are one table: what is wrong with it stands beside it, and the table stays as it was typed
+    await command('as built');
+    const table = page.getByLabel('Table, typed or pasted');
+    for (const text of [
+      'three bananas',
+      'part,what,value\nflow,depth,12 parsec',
+      'part,what,value\nflow,colour,3 um',
+    ]) {
+      await table.fill(text);
+      await page.getByRole('button', { name: 'Compare with the drawing' }).click();
+      await page.locator('.card p.fault').waitFor();
+      expect(await table.inputValue()).toBe(text);
+      expect(await table.getAttribute('aria-invalid')).toBe('true');
+      expect((await page.locator('.card p.fault').textContent())!.length).toBeGreaterThan(12);
+      await table.fill('');
+      await page.locator('.card p.fault').waitFor({ state: 'detached' });
+    }
+    await page.getByRole('button', { name: 'Close' }).first().click();
+    expect(await chipNow(page)).toBe(before);
+    expect(sitting.errors).toEqual([]);
+  } finally {
+    await sitting.end();
+    rmSync(folder, { recursive: true, force: true });
+  }
+}, 400_000);
