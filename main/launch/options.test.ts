@@ -1,9 +1,9 @@
-import { chmodSync, mkdirSync, mkdtempSync, rmSync, writeFileSync } from 'node:fs';
+import { chmodSync, mkdirSync, mkdtempSync, rmSync, utimesSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { expect, test } from 'vitest';
 import { startOptions } from './options.ts';
-import { runtimePath } from './runtime.ts';
+import { fetchRuntime, runtimePath } from './runtime.ts';
 
 test('what the start takes, and what it takes it for', () => {
   expect(startOptions([], {})).toEqual({ browser: false, open: true, port: 0, idleMs: 300_000, files: [] });
@@ -43,6 +43,39 @@ test('the desktop runtime is found where it was put, and only there', async () =
     chmodSync(executable, 0o755);
     expect(await runtimePath(root, {})).toBe(executable);
     expect(await runtimePath(root, { ELECTRON_OVERRIDE_DIST_PATH: join(root, 'none') })).toBeNull();
+  } finally {
+    rmSync(root, { recursive: true, force: true });
+  }
+});
+
+test('a start that found no way to the runtime is remembered for a day; the next ones do not wait', async () => {
+  const root = mkdtempSync(join(tmpdir(), 'channelwright-runtime-'));
+  try {
+    let asked = 0;
+    const refuse = async (): Promise<boolean> => {
+      asked += 1;
+      return false;
+    };
+    const told: string[] = [];
+    const fetched = (): Promise<boolean> => fetchRuntime(root, (line) => told.push(line), refuse);
+    expect(await fetched()).toBe(false);
+    expect(await fetched()).toBe(false);
+    expect(asked).toBe(1);
+    const mark = join(root, 'node_modules', '.cache', 'channelwright', 'no-runtime');
+    const twoDaysAgo = new Date(Date.now() - 2 * 24 * 3_600_000);
+    utimesSync(mark, twoDaysAgo, twoDaysAgo);
+    expect(await fetched()).toBe(false);
+    expect(asked).toBe(2);
+    // A way that leads to an installer which is not there.
+    utimesSync(mark, twoDaysAgo, twoDaysAgo);
+    expect(
+      await fetchRuntime(
+        root,
+        (line) => told.push(line),
+        async () => true,
+      ),
+    ).toBe(false);
+    expect(told).toHaveLength(1);
   } finally {
     rmSync(root, { recursive: true, force: true });
   }

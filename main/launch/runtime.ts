@@ -1,9 +1,11 @@
 import { spawn } from 'node:child_process';
-import { access, readFile } from 'node:fs/promises';
-import { join } from 'node:path';
+import { access, mkdir, readFile, stat, writeFile } from 'node:fs/promises';
+import { dirname, join } from 'node:path';
 
 const RELEASES = 'https://github.com';
 const PROBE_MS = 3_000;
+/** After a try that found no way, starts do not wait for another one so soon. */
+const AGAIN_MS = 24 * 3_600_000;
 
 /** Where the desktop runtime's executable lies, null where it is not installed. */
 export async function runtimePath(root: string, environment = process.env): Promise<string | null> {
@@ -19,13 +21,34 @@ export async function runtimePath(root: string, environment = process.env): Prom
   }
 }
 
-/** Tries to fetch the desktop runtime by its own installer; false where there is no way to it. */
-export async function fetchRuntime(root: string, says: (line: string) => void): Promise<boolean> {
-  const reachable = await fetch(RELEASES, { method: 'HEAD', signal: AbortSignal.timeout(PROBE_MS) }).then(
+const reachable = async (): Promise<boolean> =>
+  await fetch(RELEASES, { method: 'HEAD', signal: AbortSignal.timeout(PROBE_MS) }).then(
     (response) => response.status < 500,
     () => false,
   );
-  if (!reachable) return false;
+
+/**
+ * Tries to fetch the desktop runtime by its own installer; false where there is no way to it, which is
+ * remembered for a day beside what is installed.
+ */
+export async function fetchRuntime(
+  root: string,
+  says: (line: string) => void,
+  isReachable = reachable,
+): Promise<boolean> {
+  const mark = join(root, 'node_modules', '.cache', 'channelwright', 'no-runtime');
+  const tried = await stat(mark).then(
+    ({ mtimeMs }) => mtimeMs,
+    () => 0,
+  );
+  if (Math.abs(Date.now() - tried) < AGAIN_MS) return false;
+  if (!(await isReachable())) {
+    // Where nothing can be kept, the next start asks again.
+    await mkdir(dirname(mark), { recursive: true })
+      .then(() => writeFile(mark, ''))
+      .catch(() => undefined);
+    return false;
+  }
   says('Fetching the desktop runtime (once, about 110 MB) …');
   const installer = join(root, 'node_modules', 'electron', 'install.js');
   return await new Promise((done) => {
