@@ -1,8 +1,8 @@
 import type { Chip } from '../../solver/chip/chip.ts';
-import type { Graph } from '../../solver/chip/graph.ts';
 import type { LimitResult, Making, Result } from '../../solver/chip/result.ts';
 import { pathLength } from '../geometry/path.ts';
 import { driveText } from '../sheet/words.ts';
+import type { ShownGraph } from '../solving/shown-graph.ts';
 import type { Tab } from '../state/view.ts';
 import { placeName, placeRef } from '../verdict/answer.ts';
 import { limitKind } from '../verdict/cells.ts';
@@ -13,7 +13,7 @@ import type { Cell, Column, Row, Table } from './table.ts';
 export { csvOf } from './table.ts';
 
 /** The table of a tab, from the chip and what was solved of it. */
-export function tableOf(tab: Tab, chip: Chip, result: Result | null, graph: Graph | null): Table {
+export function tableOf(tab: Tab, chip: Chip, result: Result | null, graph: ShownGraph | null): Table {
   switch (tab) {
     case 'ports':
       return ports(chip, result);
@@ -29,7 +29,7 @@ export function tableOf(tab: Tab, chip: Chip, result: Result | null, graph: Grap
 }
 
 /** How many rows a tab has, without making them. */
-export function countOf(tab: Tab, chip: Chip, result: Result | null, graph: Graph | null): number {
+export function countOf(tab: Tab, chip: Chip, result: Result | null, graph: ShownGraph | null): number {
   switch (tab) {
     case 'ports':
       return chip.ports.length;
@@ -224,7 +224,7 @@ function routes(result: Result | null): Table {
   return { columns, rows };
 }
 
-function junctions(result: Result | null, graph: Graph | null): Table {
+function junctions(result: Result | null, graph: ShownGraph | null): Table {
   const columns: Column[] = [
     { id: 'name', head: 'place' },
     { id: 'kind', head: 'kind' },

@@ -1,8 +1,8 @@
 import type { Channel, Chip } from '../../solver/chip/chip.ts';
-import type { Graph } from '../../solver/chip/graph.ts';
 import { placeAlong } from '../geometry/path.ts';
 import type { Xy } from '../geometry/vector.ts';
 import { SHADES } from '../look/ramp.ts';
+import type { ShownGraph } from '../solving/shown-graph.ts';
 import { placeOn, type Shown, valueOn } from './overlay.ts';
 
 /** A stretch of channel that is drawn in one colour. */
@@ -21,7 +21,7 @@ export interface Stretch {
 /** The chip as stretches; what has not changed since `before` is taken over from there. */
 export interface Scene {
   readonly chip: Chip;
-  readonly graph: Graph | null;
+  readonly graph: ShownGraph | null;
   readonly stretches: readonly Stretch[];
   /** First stretch of each channel, in the order of the chip, with one entry more at the end. */
   readonly first: Int32Array;
@@ -31,7 +31,7 @@ export interface Scene {
  * Cuts each channel where the fluid divides. `graph` may be of an older chip: channels that are the same
  * object in both keep their cuts, all others are one stretch until they are read anew.
  */
-export function makeScene(chip: Chip, graph: Graph | null, graphChip: Chip | null): Scene {
+export function makeScene(chip: Chip, graph: ShownGraph | null, graphChip: Chip | null): Scene {
   const cuts = new Map<Channel, { start: number; stop: number; number: number }[]>();
   if (graph && graphChip)
     for (const piece of graph.pieces) {

@@ -3,12 +3,12 @@ import type { CellPicture } from '../../solver/cell/picture.ts';
 import type { CellShape } from '../../solver/cell/shape.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { ChipEdit } from '../../solver/chip/edit.ts';
-import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { ProblemKind } from '../../solver/problem/problem.ts';
 import type { SolveOptions } from '../../solver/solve.ts';
 import type { Answer } from '../verdict/answer.ts';
 import type { UnitHabit } from '../words/figure.ts';
+import type { ShownGraph } from './shown-graph.ts';
 
 /** What the page tells the solving thread; `id` grows by one with every chip it means. */
 export type Order =
@@ -81,7 +81,7 @@ export type CellNews = { readonly id: number } & (
 /** An answer to a chip. */
 export interface Answered {
   /** The drawing as the fluid reads it crosses once: 'same' where it is that of the answer before. */
-  readonly graph: Graph | 'same' | null;
+  readonly graph: ShownGraph | 'same' | null;
   readonly outcome: Outcome;
   /** Junctions still being solved, which count as ideal in this answer; another answer follows. */
   readonly waiting: number;

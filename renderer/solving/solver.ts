@@ -1,12 +1,12 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { ChipEdit } from '../../solver/chip/edit.ts';
-import type { Graph } from '../../solver/chip/graph.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { SolveOptions } from '../../solver/solve.ts';
 import { createStore, type Store } from '../state/store.ts';
 import type { Answer } from '../verdict/answer.ts';
 import type { UnitHabit } from '../words/figure.ts';
 import type { KeptCell, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
+import type { ShownGraph } from './shown-graph.ts';
 
 /** The newest answer and what it is of. */
 export interface Solved {
@@ -16,7 +16,7 @@ export interface Solved {
   /** Why there is no result. */
   readonly problem: Refused | null;
   /** The drawing as the fluid reads it, and the chip it was read from. */
-  readonly graph: Graph | null;
+  readonly graph: ShownGraph | null;
   readonly graphChip: Chip | null;
   /** The answer to a newer chip is on its way. */
   readonly busy: boolean;
@@ -39,7 +39,7 @@ export interface Live {
   readonly chip: Chip;
   readonly result: Result | null;
   readonly problem: Refused | null;
-  readonly graph: Graph | null;
+  readonly graph: ShownGraph | null;
   readonly waiting: number;
 }
 
@@ -91,7 +91,7 @@ export function createSolver(
   const live = createStore<Live | null>(null);
   /** Chips as they would be, by number; empty when the hand has let go. */
   const dragged = new Map<number, { readonly chip: Chip; readonly drawn?: string | null }>();
-  let graph: Graph | null = null;
+  let graph: ShownGraph | null = null;
   /** Chips asked about and not yet answered, by number. */
   const asked = new Map<number, Chip>();
   const tries = new Map<number, (outcome: Outcome) => void>();

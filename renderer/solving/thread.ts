@@ -16,6 +16,7 @@ import { verdicts } from '../verdict/verdicts.ts';
 import { showIn } from '../words/figure.ts';
 import { exercise } from './exercise.ts';
 import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
+import { shownGraph } from './shown-graph.ts';
 
 /** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
 export interface CellHand {
@@ -181,7 +182,7 @@ export function solvingThread(
   const whole = ({ graph, outcome, waiting }: Fresh): Answered => {
     const known = graph && graph === sent;
     sent = graph;
-    return { graph: known ? 'same' : graph, outcome, waiting: waiting.length };
+    return { graph: known ? 'same' : graph && shownGraph(graph), outcome, waiting: waiting.length };
   };
   /** The answer in short, which is soon there and soon shown; the whole of it is sent when it is asked for. */
   const tellShort = (which: Chip, fresh: Fresh): void => {
