@@ -11,6 +11,7 @@ export default defineConfig({
     // No test is timed: this only ends what hangs, on the busiest machine too.
     testTimeout: 300_000,
     hookTimeout: 300_000,
+    expect: { poll: { timeout: 60_000, interval: 50 } },
     reporters: ['default', './test/house/count-reporter.ts'],
   },
 });

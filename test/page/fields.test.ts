@@ -2,7 +2,7 @@ import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { Page } from 'playwright-core';
-import { expect, test } from 'vitest';
+import { expect, test, vi } from 'vitest';
 import { dxf, outline } from '../import/read.ts';
 import { answered, placeOnPage, sit } from './desk.ts';
 import { EVERYTHING } from './everything.ts';
@@ -146,8 +146,12 @@ test('nonsense in the fields of every maker: kept, explained, never applied, nev
       await page.keyboard.press('Enter');
       const maker = page.locator('.card').getByRole('region', { name: title });
       await maker.waitFor();
-      expect(await maker.locator('input').count(), title).toBe(wanted);
       await answered(page);
+      // The card is drawn anew while answers come.
+      await vi.waitFor(async () => expect(await maker.locator('input').count(), title).toBe(wanted), {
+        timeout: 60_000,
+        interval: 100,
+      });
       const chosen = await page.locator('.card h2').textContent();
       const before = await chipNow(page);
       // back to it by its table

@@ -70,7 +70,9 @@ test('keep-outs drawn, found, moved, taken away and brought back; bands beside f
   const chip = async () => {
     await sheet.focus();
     await page.keyboard.press('Control+a');
+    await page.evaluate(() => navigator.clipboard.writeText(''));
     await page.keyboard.press('Control+c');
+    await page.waitForFunction(async () => (await navigator.clipboard.readText()).length > 0);
     const text = await page.evaluate(() => navigator.clipboard.readText());
     return readDescription(text);
   };

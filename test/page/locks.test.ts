@@ -23,6 +23,7 @@ test('a locked channel is not moved by hand, keys, fields or what it is joined t
     const description = async (): Promise<string> => {
       await sheet.focus();
       await page.keyboard.press('Control+a');
+      await page.evaluate(() => navigator.clipboard.writeText(''));
       await page.keyboard.press('Control+c');
       await page.waitForFunction(async () => (await navigator.clipboard.readText()).includes('"feed"'));
       return page.evaluate(() => navigator.clipboard.readText());
