@@ -6,7 +6,7 @@ import { figure } from './figure.ts';
  * it. Nothing where that is nought (what is imposed) or not known.
  */
 export const plusMinus = (band: number | null | undefined): string =>
-  band ? `\u00a0±\u00a0${figure(band, 'share', { digits: 2, unit: '%' })}` : '';
+  band ? ` ±\u00a0${figure(band, 'share', { digits: 2, unit: '%' })}` : '';
 
 /** Of a share or wall shear with a band of its own; in large chips the worst of the chip stands for it. */
 export function bandOf<K extends 'share' | 'flow' | 'shear'>(
