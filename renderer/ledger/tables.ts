@@ -69,7 +69,7 @@ function ports(chip: Chip, result: Result | null): Table {
     { id: 'hole', head: 'hole', kind: 'length', unit: 'um', edits: 'hole' },
     ...(result?.making
       ? ([
-          { id: 'making', head: '± from making', kind: 'share', unit: '%', digits: 2 },
+          { id: 'making', head: '± making', kind: 'share', unit: '%', digits: 2 },
           { id: 'chief', head: 'most of it from' },
         ] as const)
       : []),
@@ -127,7 +127,7 @@ function channels(chip: Chip, result: Result | null): Table {
     { id: 'reynolds', head: 'Re', kind: 'number', digits: 2 },
     { id: 'time', head: 'time', kind: 'time', unit: 's' },
     ...(result?.making
-      ? ([{ id: 'making', head: '± from making', kind: 'share', unit: '%', digits: 2 }] as const)
+      ? ([{ id: 'making', head: '± making', kind: 'share', unit: '%', digits: 2 }] as const)
       : []),
   ];
   const solved = new Map(result?.channels.map((channel) => [channel.id, channel]));
