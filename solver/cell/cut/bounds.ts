@@ -44,3 +44,6 @@ export const MERGE_TIGHT = 1.6;
  * (measured); the solver's own bound on memory has the last word.
  */
 export const LARGEST = 200;
+
+/** A face is left out where the channel ends so soon (in legs) beyond it. */
+export const NEAR_END = 1.2;

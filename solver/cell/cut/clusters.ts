@@ -1,5 +1,5 @@
 import type { Drawing } from '../../chip/read-graph-drawing.ts';
-import { decayLength, legLength, MERGE_TIGHT } from './bounds.ts';
+import { decayLength, legLength, MERGE_TIGHT, NEAR_END } from './bounds.ts';
 import type { Core, Sources } from './sources.ts';
 import type { CutOptions } from './spec.ts';
 import { widthAt } from './width.ts';
@@ -87,7 +87,8 @@ function neighbours(drawing: Drawing, byChannel: readonly (readonly Core[])[]): 
         b: core.source,
         apart: gap / decayLength(width, depth),
         widths: gap / width,
-        reached: gap < legLength(width, depth),
+        // A span takes in a channel's end from this far: what goes on there must be in the cell as well.
+        reached: gap <= 1.05 * NEAR_END * legLength(width, depth),
       });
       if (core.high > last.high) last = core;
     }

@@ -1,7 +1,7 @@
 import { TOUCH } from '../../chip/geometry/tolerance.ts';
 import type { Graph } from '../../chip/graph.ts';
 import type { Drawing } from '../../chip/read-graph-drawing.ts';
-import { BEND_TURN, decayLength, legLength } from './bounds.ts';
+import { BEND_TURN, decayLength, legLength, NEAR_END } from './bounds.ts';
 import { type Clusters, depthOf } from './clusters.ts';
 import type { CutOptions } from './spec.ts';
 import { widthAt } from './width.ts';
@@ -36,8 +36,6 @@ export interface Spans {
 
 /** Faces closer to a port than this share of the width leave no room for a leg. */
 const LEAST_LEG = 0.2;
-/** A face is left out where the channel ends so soon (in legs) beyond it. */
-const NEAR_END = 1.2;
 
 /** Lays legs on the cores of every channel and puts the faces between cells. */
 export function laySpans(drawing: Drawing, graph: Graph, clusters: Clusters, options: CutOptions): Spans {
