@@ -20,6 +20,8 @@ const FORMATS = ['dxf', 'gdsii', 'svg'] as const;
 type Format = (typeof FORMATS)[number];
 /** Chips whose junctions are solved: every such one, and those that ideal junctions do not tell alike. */
 const SOLVED = WHOLE ? 10 : 33;
+/** Asked of solved junctions, well below what the two may differ by. */
+const ACCURACY = 0.001;
 /** A port that takes less than this of the whole is compared by the whole. */
 const LEAST_SHARE = 0.05;
 const HOUR = 3.6e6;
@@ -65,24 +67,30 @@ async function readBack(chip: Chip, format: Format): Promise<Read> {
   return { chip: { ...chip, channels, chambers }, area };
 }
 
-/** The most that a port's flow differs by, relative. */
-function apart(one: Chip, other: Chip, junctions: 'ideal' | 'solved'): number {
-  const [wanted, got] = [one, other].map((chip) => solve(chip, { junctions }).ports);
+/** The most that a port's flow differs by, relative; whether all junctions were taken as asked. */
+function apart(
+  one: Chip,
+  other: Chip,
+  junctions: 'ideal' | 'solved',
+): { readonly off: number; readonly whole: boolean } {
+  const results = [one, other].map((chip) => solve(chip, { junctions, accuracy: ACCURACY }));
+  const [wanted, got] = results.map(({ ports }) => ports);
   const total = wanted!.reduce((sum, { flow }) => sum + Math.max(0, flow!), 0);
-  return wanted!.reduce((most, { id, flow }) => {
+  const off = wanted!.reduce((most, { id, flow }) => {
     const again = got!.find((port) => port.id === id)!.flow!;
     return Math.max(most, Math.abs(again - flow!) / Math.max(Math.abs(flow!), LEAST_SHARE * total));
   }, 0);
+  return { off, whole: results.every((result) => result.junctions === junctions) };
 }
 
 describe.each(FORMATS)('%s', (format) => {
-  const found = { area: 0, ideal: 0, solved: 0, chips: 0, doubted: 0, wells: 0, layers: 0 };
+  const found = { area: 0, ideal: 0, solved: 0, chips: 0, doubted: 0, mixed: 0, wells: 0, layers: 0 };
   beforeAll(async () => {
     for (let seed = 1; seed <= CHIPS; seed += 1) {
       if (!WHOLE && seed % FORMATS.length !== FORMATS.indexOf(format)) continue;
       const chip = randomNetwork(seed);
       const read = await readBack(chip, format);
-      const off = apart(chip, read.chip, 'ideal');
+      const { off } = apart(chip, read.chip, 'ideal');
       found.chips += 1;
       found.wells += chip.chambers.length;
       found.layers += chip.layers.length - 1;
@@ -91,15 +99,18 @@ describe.each(FORMATS)('%s', (format) => {
       const doubted = off > 0.002;
       if (doubted) found.doubted += 1;
       else found.ideal = Math.max(found.ideal, off);
-      if (doubted || seed % SOLVED < FORMATS.length)
-        found.solved = Math.max(found.solved, apart(chip, read.chip, 'solved'));
+      if (!doubted && seed % SOLVED >= FORMATS.length) continue;
+      const solved = apart(chip, read.chip, 'solved');
+      // A junction that the solver leaves ideal, and says so, is told by the ideal comparison.
+      if (!solved.whole && !doubted) found.mixed += 1;
+      else found.solved = Math.max(found.solved, solved.off);
     }
   }, HOUR);
 
   test('there are chips of every sort among them, and hardly any in doubt', () => {
     expect(found.chips).toBeGreaterThanOrEqual(WHOLE ? CHIPS : Math.floor(CHIPS / FORMATS.length));
     expect(Math.min(found.wells, found.layers)).toBeGreaterThan(3);
-    expect(found.doubted).toBeLessThanOrEqual(0.02 * found.chips);
+    expect(found.doubted + found.mixed).toBeLessThanOrEqual(0.02 * found.chips);
   });
   const claim = { check: 'invariant', source: 'the chip before it went through the mask' } as const;
   const at = `random chips through ${format.toUpperCase()} and back`;

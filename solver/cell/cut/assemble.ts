@@ -4,6 +4,7 @@ import type { Graph } from '../../chip/graph.ts';
 import { type PlanBody, planShape } from '../../chip/plan.ts';
 import { siteCorners } from '../../chip/plan-corners.ts';
 import type { Drawing } from '../../chip/read-graph-drawing.ts';
+import { twiceArea } from '../../mesh/check-shape.ts';
 import type { Edge, Shape } from '../../mesh/mesh.ts';
 import type { CellShape } from '../shape.ts';
 import type { Hole } from './sources.ts';
@@ -81,7 +82,8 @@ export function assemble(
   const { shapes } = planShape(drawing, bodies, layer.fillet, minus);
   const seen = new Set<number>();
   const parts: Part[] = [];
-  for (const shape of shapes) {
+  for (const whole of shapes) {
+    const shape = whole.filter((loop, l) => l === 0 || !isSliver(loop));
     const widths = faceWidths(shape);
     for (const [t, width] of widths) {
       const mouth = mouths[t - 1]!;
@@ -146,6 +148,16 @@ function rim(hole: Hole): Mouth {
     centre: [hole.x, hole.y],
     direction: [0, 0],
   };
+}
+
+/** A gap thinner than what counts as touching, as rounding leaves it between channels that abut. */
+function isSliver(loop: readonly Edge[]): boolean {
+  let perimeter = 0;
+  loop.forEach((e, k) => {
+    const next = loop[(k + 1) % loop.length]!;
+    perimeter += Math.hypot(next.x - e.x, next.y - e.y);
+  });
+  return Math.abs(twiceArea(loop)) <= TOUCH * perimeter;
 }
 
 /** Total length (chords) of the edges of every tag but the wall's. */
