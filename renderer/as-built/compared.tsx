@@ -3,6 +3,7 @@ import type { Restored } from '../../solver/asbuilt/restore.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import type { Run } from '../verdict/answer.ts';
+import { plusMinus } from '../words/band.ts';
 import { figure } from '../words/figure.ts';
 import { drivesWords, driveWords, heldWords, madeWords, nearWords, shareWith } from './words.ts';
 
@@ -125,6 +126,8 @@ export function ComparedChips({
         <p className="soft small">
           ± is what measurements and tolerances leave open, as likely as they are. Widths measured: {measured}
           {assumed > 0 && `, as drawn: ${assumed}`}. {says.join(' ')}
+          {result.bands &&
+            ` What the solver knows of its own errors comes beside that: shares${plusMinus(result.bands.share) || ' as imposed'}, wall shear${plusMinus(result.bands.shear)}.`}
         </p>
         <div className="row">
           <button type="button" className="quiet" onClick={onKeep}>

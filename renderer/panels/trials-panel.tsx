@@ -1,10 +1,12 @@
 import { useCallback, useEffect, useState } from 'react';
 import type { Output } from '../../main/contract/contract.ts';
+import type { PortResult, Result } from '../../solver/chip/result.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import { plainText } from '../verdict/answer.ts';
 import { verdicts } from '../verdict/verdicts.ts';
+import { bandOf, plusMinus } from '../words/band.ts';
 import { figure } from '../words/figure.ts';
 
 type Trial = Output<'trials.list'>['trials'][number];
@@ -114,10 +116,15 @@ function Compared({ held }: { readonly held: Held }) {
     result: held.result,
     trouble: held.result ? '' : 'It was kept without answers.',
   });
+  const told = (of: Result | null, port: PortResult | undefined): string =>
+    port ? figure(port.flow, 'flow') + plusMinus(port.flow === null ? null : bandOf(of, 'flow', port)) : '–';
   const ports = (result?.ports ?? []).map((port) => ({
     id: port.id,
-    now: port.flow,
-    before: held.result?.ports.find((other) => other.id === port.id)?.flow ?? null,
+    now: told(result, port),
+    before: told(
+      held.result,
+      held.result?.ports.find((other) => other.id === port.id),
+    ),
   }));
   return (
     <section aria-label={`Compared with ${held.trial.name}`}>
@@ -143,8 +150,8 @@ function Compared({ held }: { readonly held: Held }) {
           {ports.map((port) => (
             <tr key={port.id}>
               <th scope="row">{port.id}</th>
-              <td>{figure(port.before, 'flow')}</td>
-              <td>{figure(port.now, 'flow')}</td>
+              <td>{port.before}</td>
+              <td>{port.now}</td>
             </tr>
           ))}
         </tbody>
