@@ -28,7 +28,7 @@ export interface Solved extends Parts {
 /** Ports times ducts beyond which bands would cost more than the answer. */
 const MOST_WORK = 2e6;
 /** Stretches beyond which pieces have the chip's worst band in place of their own. */
-const MOST_PIECES = 128;
+const MOST_PIECES = 64;
 /** Of all that enters: less than this is a trickle. */
 const TRICKLE = 1e-6;
 /** Errors below a millionth are round-off, and of no use to anybody. */
