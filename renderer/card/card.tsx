@@ -3,9 +3,9 @@ import { AsBuiltPanel } from '../as-built/as-built-panel.tsx';
 import { BringInPanel } from '../bring-in/bring-in-panel.tsx';
 import { findPart } from '../edits/parts.ts';
 import { HandOverPanel } from '../handover/hand-over-panel.tsx';
+import { Apart } from '../page/apart.tsx';
 import { usePage } from '../page/context.tsx';
 import { ChipPanel } from '../panels/chip-panel.tsx';
-
 import { KeysPanel } from '../panels/keys-panel.tsx';
 import { PlotsPanel } from '../panels/plots-panel.tsx';
 import { AboutPanel, HistoryPanel } from '../panels/program-panels.tsx';
@@ -64,7 +64,9 @@ export function Card() {
   return (
     <aside ref={aside} className="card" aria-label={panel === 'card' ? 'What is chosen' : TITLES[panel]}>
       {panel === 'card' ? (
-        <Chosen />
+        <Apart name="The card" className="">
+          <Chosen />
+        </Apart>
       ) : (
         <>
           <div className="panel-head">
@@ -78,7 +80,9 @@ export function Card() {
               Close
             </button>
           </div>
-          <PanelBody panel={panel} />
+          <Apart name={TITLES[panel]} className="">
+            <PanelBody panel={panel} />
+          </Apart>
         </>
       )}
     </aside>

@@ -32,7 +32,8 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
   const ramp = useMemo(() => shown('wall shear', chip, result), [chip, result]);
   const tapered = channel.width[0] !== channel.width[1];
   const length = pathLength(channel.path, channel.bendRadius);
-  const widest = solved?.pieces.reduce((a, b) => ((b.peakWallShear ?? 0) > (a.peakWallShear ?? 0) ? b : a));
+  // a channel that lies in solved junctions all the way has no piece of its own
+  const widest = solved?.pieces.toSorted((a, b) => (b.peakWallShear ?? 0) - (a.peakWallShear ?? 0))[0];
   return (
     <>
       <h2>{channel.id}</h2>
@@ -148,8 +149,8 @@ function Results({
   readonly chip: Chip;
   readonly result: Result | null;
 }) {
-  if (!solved || solved.pieces.length === 0)
-    return <Figure label="Flow" figure="comes with the first answer" />;
+  if (!solved) return <Figure label="Flow" figure="comes with the first answer" />;
+  if (solved.pieces.length === 0) return <Figure label="Flow" figure="solved as part of a junction" />;
   const { pieces } = solved;
   const sum = (pick: (piece: (typeof pieces)[number]) => number | null): number | null =>
     pieces.reduce<number | null>((total, piece) => {

@@ -5,6 +5,7 @@ import { Sheet } from '../sheet/sheet.tsx';
 import { openDropped, Start } from '../start/start.tsx';
 import { useStore } from '../state/store.ts';
 import { VerdictBar } from '../verdict/verdict-bar.tsx';
+import { Apart } from './apart.tsx';
 import { usePage } from './context.tsx';
 import { FileFinder } from './file-finder.tsx';
 import { Header } from './header.tsx';
@@ -39,10 +40,16 @@ export function App() {
       {open ? (
         <div className="frame">
           <Header />
-          <VerdictBar />
+          <Apart name="The five answers" className="verdicts">
+            <VerdictBar />
+          </Apart>
           <Verbs />
-          <Sheet />
-          <Ledger />
+          <Apart name="The sheet" className="sheet">
+            <Sheet />
+          </Apart>
+          <Apart name="The ledger" className="ledger">
+            <Ledger />
+          </Apart>
           <Card />
         </div>
       ) : (
