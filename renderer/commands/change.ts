@@ -1,7 +1,8 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { Problem } from '../../solver/problem/problem.ts';
-import { clipText, paste } from '../edits/clip.ts';
+import { clipText } from '../edits/clip.ts';
 import { findParts, listOf } from '../edits/parts.ts';
+import { type Reading, reading } from '../edits/reading.ts';
 import { align, type Edge, join, mirror, remove, type Shaping, split, turn } from '../edits/shape.ts';
 import { nearestOnPath } from '../geometry/path.ts';
 import type { Xy } from '../geometry/vector.ts';
@@ -54,7 +55,7 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
     await navigator.clipboard?.writeText(text).catch(() => undefined);
     return true;
   };
-  const put = (text: string): void => {
+  const put = (text: string, { paste }: Reading): void => {
     const chip = desk.chip();
     const scope = bench.scope();
     if (!chip || !scope) return;
@@ -136,7 +137,7 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
       why: open,
       run: async () => {
         const text = await navigator.clipboard?.readText().catch(() => '');
-        put(text || kept);
+        await reading(desk, (there) => put(text || kept, there));
       },
     },
     {

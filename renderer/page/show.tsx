@@ -3,6 +3,7 @@ import type { Client } from '../../main/contract/client.ts';
 import type { ProjectState } from '../../main/contract/contract.ts';
 import { createCommands } from '../commands/commands.ts';
 import { startKeyboard } from '../commands/keyboard.ts';
+import { bringReading } from '../edits/reading.ts';
 import { chooseScheme } from '../look/theme.ts';
 import type { Solver } from '../solving/solver.ts';
 import { createDesk } from '../state/desk.ts';
@@ -15,6 +16,8 @@ import { PageContext } from './context.tsx';
 
 /** ms that the first picture waits for the host, so that it is of the project and in the person's own units. */
 const PATIENCE = 250;
+/** ms after which the start is over, and what is brought in later is: it is there when it is needed. */
+const STARTED = 3000;
 
 /** Joins everything to one page and puts it on the screen. `first` is what the window has open already. */
 export function showPage(client: Client, solver: Solver, first: Promise<ProjectState | null>): void {
@@ -38,6 +41,7 @@ export function showPage(client: Client, solver: Solver, first: Promise<ProjectS
   startKeyboard(page);
   followHand(desk, bench);
 
+  setTimeout(() => void bringReading().catch(() => undefined), STARTED);
   const late = new Promise((done) => setTimeout(done, PATIENCE));
   void Promise.race([Promise.all([known, opened]), late]).then(() =>
     createRoot(document.getElementById('page')!).render(

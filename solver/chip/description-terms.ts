@@ -2,8 +2,9 @@ import { z } from 'zod';
 import { BOUNDS } from './bounds.ts';
 import type { Limit, LimitPlace, Target } from './chip.ts';
 import { defined } from './description-parts.ts';
-import { Fault, step } from './schema-fault.ts';
+import { Fault } from './schema-fault.ts';
 import { id, keyed, list, pair, quantity, readId, readList, text } from './schema-fields.ts';
+import { step } from './schema-parse.ts';
 
 /** What the designer wants and what the cells bear: targets and limits of a description. */
 

@@ -12,11 +12,11 @@ import type {
   Target,
   Tolerance,
 } from './chip.ts';
-import { FORMAT, VERSION } from './description.ts';
+import { FORMAT, VERSION } from './description-format.ts';
 import type { Process } from './making.ts';
 import type { Pump, Reservoir } from './running.ts';
-import { LENGTHS, NUMBERS } from './schema-making.ts';
-import type { Tolerances } from './schema-tolerance.ts';
+import { LENGTHS, NUMBERS } from './schema-check-making.ts';
+import type { Tolerances } from './tolerance.ts';
 import type { Kind } from './units.ts';
 import { NM_PER_UNIT, planText, writeQuantity } from './units-write.ts';
 

@@ -1,20 +1,19 @@
 import { z } from 'zod';
 import { BOUNDS } from './bounds.ts';
 import type { Chip, LengthUnit } from './chip.ts';
+import { FORMAT, VERSION } from './description-format.ts';
 import { parseJson } from './description-json.ts';
 import { readPlanLists } from './description-lists.ts';
 import { fluid, keepOut, layer, port, via } from './description-parts.ts';
 import { limit, target } from './description-terms.ts';
 import { checkChip } from './schema-check.ts';
-import { Fault, faultToProblem, parseWith, valueInWords } from './schema-fault.ts';
+import { Fault, faultToProblem, valueInWords } from './schema-fault.ts';
 import { choice, keyed, list, plan, readKeys, text } from './schema-fields.ts';
 import { accepted, process } from './schema-making.ts';
+import { parseWith } from './schema-parse.ts';
 import { assay, rating } from './schema-running.ts';
 
 /** The chip description: JSON text, version 1, which converts to the chip and back without loss. */
-
-export const FORMAT = 'channelwright-chip';
-export const VERSION = 1;
 
 const LENGTH_UNITS = ['nm', 'um', 'mm', 'cm', 'm'] as const satisfies readonly LengthUnit[];
 
@@ -71,7 +70,13 @@ function rest(unit: LengthUnit) {
   });
 }
 
-const restIn = new Map(LENGTH_UNITS.map((unit) => [unit, rest(unit)]));
+/** Made when the first description in that unit comes: making all of them takes longer than reading one. */
+const made = new Map<LengthUnit, ReturnType<typeof rest>>();
+function restIn(unit: LengthUnit): ReturnType<typeof rest> {
+  const schema = made.get(unit) ?? rest(unit);
+  made.set(unit, schema);
+  return schema;
+}
 
 function checkVersion(raw: Record<string, unknown>): void {
   if (raw.format !== FORMAT) {
@@ -108,7 +113,7 @@ function chipOf(value: unknown, fallbackName: string): Chip {
   checkVersion(value as Record<string, unknown>);
   const raw = readKeys(value, KEYS, NEEDS);
   const { name = fallbackName, note = '', lengthUnit = 'um' } = parseWith(head, raw);
-  const parts = parseWith(restIn.get(lengthUnit)!, raw);
+  const parts = parseWith(restIn(lengthUnit), raw);
   const { channels, chambers } = readPlanLists(raw.channels, raw.chambers, lengthUnit);
   return {
     name,

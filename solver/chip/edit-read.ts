@@ -4,8 +4,9 @@ import type { Change } from './edit-draft.ts';
 import { LISTS } from './schema-check.ts';
 import { TOP } from './schema-chip.ts';
 import { PART } from './schema-data-parts.ts';
-import { at, Fault, faultToProblem, parseWith } from './schema-fault.ts';
+import { at, Fault, faultToProblem } from './schema-fault.ts';
 import { readId, readKeys, readList, readText } from './schema-fields.ts';
+import { parseWith } from './schema-parse.ts';
 
 const EDIT_KEYS = new Set(['label', 'changes']);
 const EDIT_NEEDS = { label: '"widen 3 channels"', changes: '[]' };

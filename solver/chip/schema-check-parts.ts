@@ -1,10 +1,10 @@
 import type { Profile } from '../section/profile.ts';
 import type { Chamber, Channel, KeepOut, Layer, Point, Port, Via } from './chip.ts';
+import { checkPump, checkReservoir } from './schema-check-running.ts';
+import { checkTolerances } from './schema-check-tolerance.ts';
 import { at, Fault, quoted } from './schema-fault.ts';
 import { outlineFault } from './schema-outline.ts';
 import { between, notNegative, positive } from './schema-range.ts';
-import { checkPump, checkReservoir } from './schema-running.ts';
-import { checkTolerances } from './schema-tolerance.ts';
 import { metres } from './units.ts';
 import { formatQuantity } from './units-format.ts';
 

@@ -1,5 +1,6 @@
 import { BOUNDS } from './bounds.ts';
 import type { Chamber, Channel, Chip, KeepOut, Layer, Port, Via } from './chip.ts';
+import { checkAccepted, checkProcess } from './schema-check-making.ts';
 import {
   checkChamber,
   checkChannel,
@@ -9,11 +10,10 @@ import {
   checkPort,
   checkVia,
 } from './schema-check-parts.ts';
+import { checkAssay, checkRating } from './schema-check-running.ts';
 import { checkFluid, checkLimit, checkTarget } from './schema-check-terms.ts';
 import { at, Fault, type Path, quoted } from './schema-fault.ts';
-import { checkAccepted, checkProcess } from './schema-making.ts';
 import { nearest } from './schema-nearest.ts';
-import { checkAssay, checkRating } from './schema-running.ts';
 
 /** The lists of a chip whose entries bear ids. */
 export const LISTS = ['layers', 'channels', 'chambers', 'vias', 'ports', 'keepOuts'] as const;

@@ -8,9 +8,10 @@ import { checkChip } from './schema-check.ts';
 import { nm } from './schema-data.ts';
 import { PART } from './schema-data-parts.ts';
 import { fluid, limits, targets } from './schema-data-terms.ts';
-import { Fault, faultToProblem, parseWith } from './schema-fault.ts';
+import { Fault, faultToProblem } from './schema-fault.ts';
 import { choice, keyed, list, text } from './schema-fields.ts';
 import { accepted, orNone, processData } from './schema-making.ts';
+import { parseWith } from './schema-parse.ts';
 import { assayData, ratingData } from './schema-running.ts';
 
 /** The keys of a chip that are set whole. */

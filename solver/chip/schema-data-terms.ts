@@ -3,8 +3,8 @@ import type { FluidSpec, ShearModel } from '../fluid/spec.ts';
 import { BOUNDS } from './bounds.ts';
 import type { Limit, Target } from './chip.ts';
 import { byKey, byKind, field, kind, si } from './schema-data.ts';
-import { parseWith, step } from './schema-fault.ts';
 import { choice, id, keyed, list, pair, readId, readList, text } from './schema-fields.ts';
+import { parseWith, step } from './schema-parse.ts';
 
 /** The fluid, targets and limits that come as data, in SI, with exactly the keys of their types. */
 

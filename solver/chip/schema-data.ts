@@ -1,7 +1,8 @@
 import { z } from 'zod';
 import { BOUNDS } from './bounds.ts';
-import { Fault, parseWith, step, valueInWords } from './schema-fault.ts';
+import { Fault, valueInWords } from './schema-fault.ts';
 import { choice, readSize } from './schema-fields.ts';
+import { parseWith, step } from './schema-parse.ts';
 
 /** Building blocks for a chip that comes as data: whole nanometres and SI numbers only. */
 

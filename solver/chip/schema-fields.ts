@@ -1,8 +1,9 @@
 import { z } from 'zod';
 import { BOUNDS } from './bounds.ts';
 import type { LengthUnit } from './chip.ts';
-import { Fault, step, valueInWords } from './schema-fault.ts';
+import { Fault, valueInWords } from './schema-fault.ts';
 import { nearest } from './schema-nearest.ts';
+import { step } from './schema-parse.ts';
 import { KINDS, type Kind, parseQuantity, wholeNm } from './units.ts';
 import { ratioToNumber } from './units-exact.ts';
 import { planNm } from './units-write.ts';

@@ -4,14 +4,11 @@ import type { LengthUnit } from './chip.ts';
 import { defined } from './description-parts.ts';
 import { type Acceptance, PROCESS_KINDS, type Process } from './making.ts';
 import { field, nm, si } from './schema-data.ts';
-import { at, Fault, parseWith } from './schema-fault.ts';
 import { choice, keyed, list, plan, quantity, text } from './schema-fields.ts';
-import { notNegative, positive } from './schema-range.ts';
+import { parseWith } from './schema-parse.ts';
 
-/** The process and what is accepted: as a description has them, as data has them, and what must hold of them. */
+/** The process and what is accepted: as a description has them and as data has them. */
 
-export const LENGTHS = ['leastWidth', 'leastGap', 'toolRadius', 'edge', 'alignment'] as const;
-export const NUMBERS = ['deepest', 'widest', 'wall', 'undercut'] as const;
 const NEEDS = { kind: '"film-mask"' };
 
 export const process = (unit: LengthUnit) =>
@@ -58,30 +55,3 @@ export const accepted = list(acceptance, BOUNDS.accepted, 1);
 /** `null` in an edit takes the key away. */
 export const orNone = <T>(shape: z.ZodType<T>): z.ZodType<T | null> =>
   field((value) => (value === null ? null : parseWith(shape, value)));
-
-export function checkProcess(process: Process): void {
-  for (const key of LENGTHS) if (process[key] !== undefined) notNegative(process[key], key, 'length');
-  for (const key of NUMBERS) {
-    const value = process[key];
-    if (value === undefined) continue;
-    if (key === 'undercut') notNegative(value, key, 'number');
-    else positive(value, key, 'number');
-  }
-  if (process.modulus !== undefined) positive(process.modulus, 'modulus', 'modulus');
-}
-
-export function checkAccepted(entries: readonly Acceptance[]): void {
-  const known = new Set<string>();
-  entries.forEach(({ kind, where, reason }, i) => {
-    at([i], () => {
-      if (reason.trim() === '') {
-        throw new Fault('missing', 'is empty.', 'Say why the finding is accepted.', ['reason']);
-      }
-      const key = `${kind} ${where}`;
-      if (known.has(key)) {
-        throw new Fault('duplicate', 'accepts the same finding twice.', 'Take one of the two away.');
-      }
-      known.add(key);
-    });
-  });
-}

@@ -1,16 +1,12 @@
-import type { Layer, Tolerance } from './chip.ts';
+import type { Tolerance } from './chip.ts';
 import { readNm } from './schema-data.ts';
 import { at, Fault, valueInWords } from './schema-fault.ts';
 import { readKeys } from './schema-fields.ts';
-import { between } from './schema-range.ts';
+import type { OwnTolerances, Tolerances } from './tolerance.ts';
 import { parseQuantity, wholeNm } from './units.ts';
 import { ratioToNumber } from './units-exact.ts';
 
-/** How far depths and widths may be off, in a description, as data, and what they must hold to. */
-
-/** Of a layer; a channel has `depth` and `width` of its own. */
-export type Tolerances = NonNullable<Layer['tolerance']>;
-export type OwnTolerances = Omit<Tolerances, 'common'>;
+/** How far depths and widths may be off, in a description and as data. */
 
 const KEYS = new Set(['depth', 'width']);
 const LAYER_KEYS = new Set([...KEYS, 'common']);
@@ -63,20 +59,3 @@ export const readOwnTolerances = (value: unknown): OwnTolerances => read(value, 
 /** As data, with exactly the keys of chip.ts. */
 export const tolerancesData = (value: unknown): Tolerances => read(value, LAYER_KEYS, false);
 export const ownTolerancesData = (value: unknown): OwnTolerances => read(value, KEYS, false);
-
-function checkOne(tolerance: Tolerance, key: string): void {
-  if ('share' in tolerance ? tolerance.share >= 0 && tolerance.share < 1 : tolerance.length >= 0) return;
-  throw new Fault('range', 'must lie from 0 to below 100 %, or be a length.', 'Correct the tolerance.', [
-    key,
-  ]);
-}
-
-export function checkTolerances(tolerances: Tolerances | undefined): void {
-  if (!tolerances) return;
-  at(['tolerance'], () => {
-    const { depth, width, common } = tolerances;
-    if (depth) checkOne(depth, 'depth');
-    if (width) checkOne(width, 'width');
-    if (common !== undefined) between(common, 'common', 0, 1);
-  });
-}
