@@ -1,5 +1,7 @@
 import type { Edge } from '../mesh/mesh.ts';
-import { type Curve, pointAt, tangentAt } from './geometry/curve.ts';
+import { bodyBox, type PlanBox } from './geometry/body-box.ts';
+import { type Curve, part, tangentAt } from './geometry/curve.ts';
+import type { PlanBody } from './plan.ts';
 import type { Drawing } from './read-graph-drawing.ts';
 
 /** Arcs that turn further (radians) may meet themselves: a union tells. */
@@ -11,27 +13,39 @@ const ROOM = 10;
 /** Corners that are one, nm, as in the outcome of a union. */
 const SAME = 0.05;
 
+type Strip = PlanBody & { kind: 'strip' };
+
 /**
- * The outline of a channel that nothing else touches, straight or with rounded bends, by its own walls:
- * counter-clockwise, from its leftmost, then lowest corner on, as a union gives it. Undefined where only a
- * union can tell: mitred corners, tapers with bends, bends tighter than the channel is wide, stretches that
+ * The outline of what a strip covers that nothing else touches, straight or with rounded bends, by its own
+ * walls: counter-clockwise, from its leftmost, then lowest corner on, as a union gives it. Undefined where only
+ * a union can tell: mitred corners, tapers with bends, bends tighter than the channel is wide, stretches that
  * come near one another.
  */
-export function loneOutline({ elements }: Drawing, channel: number): Edge[] | undefined {
-  const first = elements.first[channel]!;
-  const last = elements.first[channel + 1]! - 1;
-  if (last - first >= MANY) return undefined;
+export function loneOutline(drawing: Drawing, strip: Strip): Edge[] | undefined {
+  const { elements } = drawing;
+  const from = Math.max(0, strip.from);
+  const to = Math.min(elements.total(strip.channel), strip.to);
+  const end = elements.first[strip.channel + 1]!;
+  const first = drawing.elementAt(strip.channel, from);
   const sides: Side[] = [];
-  const boxes: Box[] = [];
-  for (let id = first; id <= last; id++) {
-    const { curve: c, h0, h1, turn1 } = elements.at(id);
-    if (turn1 !== 0 || (last > first && h0 !== h1)) return undefined;
+  const boxes: PlanBox[] = [];
+  for (let id = first; id < end; id++) {
+    const e = elements.at(id);
+    const last = e.s1 >= to || id + 1 === end;
+    const slope = (e.h1 - e.h0) / (e.s1 - e.s0);
+    const c = part(e.curve, from - e.s0, to - e.s0);
+    if (c.length === 0) return undefined;
+    const h0 = from > e.s0 ? e.h0 + slope * (from - e.s0) : e.h0;
+    const h1 = to < e.s1 ? e.h0 + slope * (to - e.s0) : e.h1;
+    if (!last && e.turn1 !== 0) return undefined;
+    if ((!last || id > first) && h0 !== h1) return undefined;
     const turn = c.length * c.curvature;
     if (c.curvature !== 0) {
       if (1 / Math.abs(c.curvature) <= Math.max(h0, h1) + ROOM) return undefined;
       if (Math.abs(turn) > WIDEST_TURN) return undefined;
     }
-    const box = boxOf(c, Math.max(h0, h1));
+    if (boxes.length >= MANY) return undefined;
+    const box = bodyBox(c, Math.max(h0, h1), ROOM);
     for (let k = 0; k + 1 < boxes.length; k++) if (meet(boxes[k]!, box)) return undefined;
     boxes.push(box);
     const before = sides[sides.length - 1];
@@ -41,6 +55,7 @@ export function loneOutline({ elements }: Drawing, channel: number): Edge[] | un
       before.turn += turn;
       before.h1 = h1;
     } else sides.push({ first: c, last: c, turn, h0, h1 });
+    if (last) break;
   }
   const right = sides.map(({ first: c, turn, h0 }) =>
     edge(c.x0 + c.uy * h0, c.y0 - c.ux * h0, Math.tan(turn / 4)),
@@ -50,13 +65,13 @@ export function loneOutline({ elements }: Drawing, channel: number): Edge[] | un
     return edge(c.x1 - uy * h1, c.y1 + ux * h1, -Math.tan(turn / 4));
   });
   const { first: start, h0 } = sides[0]!;
-  const { last: end, h1 } = sides[sides.length - 1]!;
-  const [vx, vy] = tangentAt(end, end.length);
+  const { last: stop, h1 } = sides[sides.length - 1]!;
+  const [vx, vy] = tangentAt(stop, stop.length);
   return fromLeast([
     ...right,
-    edge(end.x1 + vy * h1, end.y1 - vx * h1, 0),
+    edge(stop.x1 + vy * h1, stop.y1 - vx * h1, 0, strip.tagTo),
     ...left,
-    edge(start.x0 - start.uy * h0, start.y0 + start.ux * h0, 0),
+    edge(start.x0 - start.uy * h0, start.y0 + start.ux * h0, 0, strip.tagFrom),
   ]);
 }
 
@@ -75,33 +90,10 @@ function goesOn(a: Curve, b: Curve): boolean {
   return Math.hypot(a.cx - b.cx, a.cy - b.cy) <= SAME;
 }
 
-const edge = (x: number, y: number, bulge: number): Edge => ({ x, y, bulge, tag: 0 });
+const edge = (x: number, y: number, bulge: number, tag = 0): Edge => ({ x, y, bulge, tag });
 
-type Box = readonly [number, number, number, number];
-
-const meet = (a: Box, b: Box): boolean => a[0] <= b[2] && b[0] <= a[2] && a[1] <= b[3] && b[1] <= a[3];
-
-/** What an element covers lies within it. */
-function boxOf(c: Curve, half: number): Box {
-  const xs = [c.x0, c.x1];
-  const ys = [c.y0, c.y1];
-  if (c.curvature !== 0) {
-    // Where the arc turns furthest to each side.
-    const start = Math.atan2(c.y0 - c.cy, c.x0 - c.cx);
-    const sweep = c.length * c.curvature;
-    for (let k = 0; k < 4; k++) {
-      const way = Math.PI * 2;
-      let by = ((k * Math.PI) / 2 - start) * Math.sign(sweep);
-      by -= Math.floor(by / way) * way;
-      if (by >= Math.abs(sweep)) continue;
-      const [x, y] = pointAt(c, by / Math.abs(c.curvature));
-      xs.push(x);
-      ys.push(y);
-    }
-  }
-  const reach = half + ROOM;
-  return [Math.min(...xs) - reach, Math.min(...ys) - reach, Math.max(...xs) + reach, Math.max(...ys) + reach];
-}
+const meet = (a: PlanBox, b: PlanBox): boolean =>
+  a[0] <= b[2] && b[0] <= a[2] && a[1] <= b[3] && b[1] <= a[3];
 
 function fromLeast(loop: Edge[]): Edge[] {
   let k = 0;

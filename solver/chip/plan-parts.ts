@@ -1,6 +1,8 @@
 import Flatbush from 'flatbush';
 import { twiceArea } from '../mesh/check-shape.ts';
 import type { Edge, Shape } from '../mesh/mesh.ts';
+import { bodyBox, type PlanBox } from './geometry/body-box.ts';
+import { part } from './geometry/curve.ts';
 import type { PlanBody } from './plan.ts';
 import type { Drawing } from './read-graph-drawing.ts';
 
@@ -12,7 +14,7 @@ import type { Drawing } from './read-graph-drawing.ts';
  */
 
 /** A straight stretch is cut where it is this many half widths long, and nothing else is near its middle. */
-const LONG = 8;
+const LONG = 0.5;
 /** Fewer bodies are united at once. */
 const FEW = 40;
 /** What two sides of a cut may lie apart by rounding, nm. */
@@ -27,7 +29,7 @@ interface Item {
   readonly body: number;
   /** Number of the element; -1 for other bodies. */
   readonly element: number;
-  readonly box: readonly [number, number, number, number];
+  readonly box: PlanBox;
 }
 
 /**
@@ -139,19 +141,9 @@ function addElements(drawing: Drawing, { channel, from, to }: Strip, body: numbe
     if (e.s1 <= from || e.s0 >= to) continue;
     const c = e.curve;
     const [low, high] = [Math.max(0, from - e.s0), Math.min(c.length, to - e.s0)];
-    const straight = c.curvature === 0;
-    const [ax, ay] = straight ? [c.x0 + c.ux * low, c.y0 + c.uy * low] : [c.x0, c.y0];
-    const [bx, by] = straight ? [c.x0 + c.ux * high, c.y0 + c.uy * high] : [c.x1, c.y1];
     const half = Math.max(e.h0, e.h1);
-    // square ends reach half a width to the sides; an arc turns, and rises over its chord
-    const rise = straight ? 0 : half + (Math.abs(c.bulge) * Math.hypot(c.x1 - c.x0, c.y1 - c.y0)) / 2;
-    const [dx, dy] = [Math.abs(c.uy) * half + rise + ROOM, Math.abs(c.ux) * half + rise + ROOM];
-    const box: [number, number, number, number] = [
-      Math.min(ax, bx) - dx,
-      Math.min(ay, by) - dy,
-      Math.max(ax, bx) + dx,
-      Math.max(ay, by) + dy,
-    ];
+    // an arc counts whole: cuts are in straight stretches
+    const box = bodyBox(c.curvature === 0 ? part(c, low, high) : c, half, ROOM);
     items.push({ body, element: id, box });
     // a mitred corner reaches up to two half widths from its vertex
     if (e.turn1 === 0 || to <= e.s1) continue;
@@ -160,7 +152,7 @@ function addElements(drawing: Drawing, { channel, from, to }: Strip, body: numbe
   }
 }
 
-function boxOf(drawing: Drawing, body: Exclude<PlanBody, Strip>): [number, number, number, number] {
+function boxOf(drawing: Drawing, body: Exclude<PlanBody, Strip>): PlanBox {
   if (body.kind === 'chamber') {
     const { outline } = drawing.chip.chambers[body.chamber]!;
     const xs = outline.map(([x]) => x);

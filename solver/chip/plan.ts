@@ -194,19 +194,19 @@ export function planCavities(chip: Chip, graph: Graph, layer: string, options: C
   const fillet = options.fillets ? chip.layers[layerIndex]!.fillet : 0;
   const cavities: PlanCavity[] = [];
   for (const [cavity, bodies] of [...byCavity].sort((a, b) => a[0] - b[0])) {
-    const [only] = bodies;
-    const lone = bodies.length === 1 && only!.kind === 'strip' && loneOutline(drawing, only!.channel);
-    if (lone) {
-      cavities.push({ cavity, shape: [lone] });
-      continue;
-    }
     // a cut would shorten the edges that fillets are fitted to
     const whole =
-      fillet === 0 ? unitedInParts(drawing, bodies, (some) => planShape(drawing, some, 0).shapes) : undefined;
-    const shapes = whole ? [whole] : planShape(drawing, bodies, fillet).shapes;
+      fillet === 0 ? unitedInParts(drawing, bodies, (some) => united(drawing, some, 0)) : undefined;
+    const shapes = whole ? [whole] : united(drawing, bodies, fillet);
     for (const shape of shapes) cavities.push({ cavity, shape });
   }
   return cavities;
+}
+
+function united(drawing: Drawing, bodies: readonly PlanBody[], fillet: number): readonly Shape[] {
+  const [only] = bodies;
+  const lone = bodies.length === 1 && only!.kind === 'strip' && loneOutline(drawing, only);
+  return lone ? [[lone]] : planShape(drawing, bodies, fillet).shapes;
 }
 
 function disc(at: Point, radius: number): PlanBody {

@@ -1,9 +1,8 @@
-import { area, FillRule, type Paths64, xor } from 'clipper2-ts';
 import { curve, part } from '../../../solver/chip/geometry/curve.ts';
 import { chordsOf } from '../../../solver/chip/plan.ts';
 import type { Edge, Shape } from '../../../solver/mesh/mesh.ts';
+import { differenceOf } from './difference.ts';
 import { flatPaths, perimeterOf } from './shapes.ts';
-import { tiles } from './split.ts';
 
 /** What was read back against what was to be drawn, nm². */
 export interface Comparison {
@@ -62,18 +61,6 @@ function chordLoss(shape: Shape, chordError: number): number {
       const sweep = c.length / radius / count;
       sum += (count * radius * radius * (sweep - Math.sin(sweep))) / 2;
     });
-  }
-  return sum;
-}
-
-/** Points that are compared at once. */
-const TILE = 1000;
-
-/** Area of the symmetric difference of two sets of polygons, outer ones counter-clockwise, holes clockwise. */
-export function differenceOf(a: Paths64, b: Paths64): number {
-  let sum = 0;
-  for (const [p, q] of tiles(a, b, TILE)) {
-    for (const path of xor(p, q, FillRule.NonZero)) sum += area(path);
   }
   return sum;
 }

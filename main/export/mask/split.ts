@@ -1,7 +1,9 @@
 import {
+  area,
   Clipper64,
   ClipType,
   FillRule,
+  getBounds,
   type Path64,
   type Paths64,
   type PolyPath64,
@@ -10,6 +12,15 @@ import {
   rectClip,
 } from 'clipper2-ts';
 
+/** Ground within a box, with the boxes of its polygons so that those on one side of a cut need no look. */
+interface Piece {
+  readonly paths: Paths64;
+  readonly boxes: readonly Rect64[];
+  /** What it was cut to; edges of polygons along its sides may be shared by several. */
+  readonly box: Rect64;
+  readonly count: number;
+}
+
 /**
  * Polygons without holes and of at most `most` points that cover the same ground, for formats that allow
  * no more: pieces are cut along the axes, through holes where there are any, at whole nanometres. Outer
@@ -17,23 +28,63 @@ import {
  */
 export function split(paths: Paths64, most: number): Path64[] {
   const out: Path64[] = [];
+  if (paths.length === 0) return out;
   // pieces still to be cut; a list, as a recursion would be as deep as the drawing is odd
-  const waiting: { paths: Paths64; clean: boolean }[] = [{ paths, clean: true }];
+  const waiting: { piece: Piece; clean: boolean }[] = [{ piece: pieceOf(paths), clean: true }];
   while (waiting.length > 0) {
-    const { paths: some, clean } = waiting.pop()!;
-    const count = some.reduce((sum, path) => sum + path.length, 0);
+    const { piece, clean } = waiting.pop()!;
+    const { paths: some, count } = piece;
     if (clean && some.length === 1 && count <= most) {
       out.push(some[0]!);
       continue;
     }
-    if (count > 2 * most || clean) {
-      waiting.push(...halves(some).map((half) => ({ paths: half, clean: false })));
+    const hole = count > 2 * most ? undefined : innerHole(piece);
+    if (count > 2 * most || hole || clean) {
+      for (const half of halves(piece, hole)) waiting.push({ piece: half, clean: false });
       continue;
     }
-    // few points: what the cuts left is put in order, outer boundary by outer boundary
-    for (const piece of ordered(some)) waiting.push({ paths: piece, clean: true });
+    // few points, and every hole cut open: what the cuts left is put in order, outer boundary by outer boundary
+    for (const ordering of ordered(some)) waiting.push({ piece: pieceOf(ordering), clean: true });
   }
   return out;
+}
+
+function pieceOf(paths: Paths64): Piece {
+  const boxes = paths.map(getBounds);
+  return { paths, boxes, box: around(boxes), count: pointsOf(paths) };
+}
+
+const pointsOf = (paths: Paths64): number => paths.reduce((sum, path) => sum + path.length, 0);
+
+function around(boxes: readonly Rect64[]): Rect64 {
+  const all: Rect64 = { left: Infinity, top: Infinity, right: -Infinity, bottom: -Infinity };
+  for (const { left, top, right, bottom } of boxes) {
+    all.left = Math.min(all.left, left);
+    all.top = Math.min(all.top, top);
+    all.right = Math.max(all.right, right);
+    all.bottom = Math.max(all.bottom, bottom);
+  }
+  return all;
+}
+
+/** The hole that no cut has opened yet nearest to the middle. */
+function innerHole({ paths, boxes, box }: Piece): Rect64 | undefined {
+  if (paths.length === 1) return undefined;
+  let best: Rect64 | undefined;
+  let least = Infinity;
+  paths.forEach((path, k) => {
+    const own = boxes[k]!;
+    const open =
+      own.left <= box.left || own.right >= box.right || own.top <= box.top || own.bottom >= box.bottom;
+    if (open) return;
+    const off =
+      Math.abs(own.left + own.right - box.left - box.right) +
+      Math.abs(own.top + own.bottom - box.top - box.bottom);
+    if (off >= least || area(path) >= 0) return;
+    least = off;
+    best = own;
+  });
+  return best;
 }
 
 /**
@@ -46,7 +97,7 @@ export function tiles(a: Paths64, b: Paths64, most: number): (readonly [Paths64,
   while (waiting.length > 0) {
     const [p, q] = waiting.pop()!;
     const count = [...p, ...q].reduce((sum, path) => sum + path.length, 0);
-    const boxes = count > most ? sides([...p, ...q]) : [];
+    const boxes = count > most ? sides([...p, ...q], around([...p, ...q].map(getBounds))) : [];
     if (boxes.length === 0) out.push([p, q]);
     for (const box of boxes) waiting.push([rectClip(box, p), rectClip(box, q)]);
   }
@@ -75,27 +126,45 @@ function ordered(paths: Paths64): Paths64[] {
   return found;
 }
 
-/** The two sides of a cut across the longer way: through the middle of a hole where the piece is small, else its points. */
-function halves(paths: Paths64): Paths64[] {
-  return sides(paths)
-    .map((side) => rectClip(side, paths))
-    .filter((half) => half.length > 0);
+/** The two sides of a cut across the longer way: through the middle of the hole, else of its points. */
+function halves({ paths, boxes, box }: Piece, hole: Rect64 | undefined): Piece[] {
+  return sides(paths, box, hole).flatMap((side) => {
+    const kept: { paths: Paths64; boxes: Rect64[] } = { paths: [], boxes: [] };
+    const cut: Paths64 = [];
+    paths.forEach((path, k) => {
+      const own = boxes[k]!;
+      if (
+        own.right <= side.left ||
+        own.left >= side.right ||
+        own.bottom <= side.top ||
+        own.top >= side.bottom
+      )
+        return;
+      if (
+        own.left >= side.left &&
+        own.right <= side.right &&
+        own.top >= side.top &&
+        own.bottom <= side.bottom
+      ) {
+        kept.paths.push(path);
+        kept.boxes.push(own);
+      } else cut.push(path);
+    });
+    for (const path of rectClip(side, cut)) {
+      kept.paths.push(path);
+      kept.boxes.push(getBounds(path));
+    }
+    if (kept.paths.length === 0) return [];
+    return [{ ...kept, box: side, count: pointsOf(kept.paths) }];
+  });
 }
 
-function sides(paths: Paths64): Rect64[] {
-  let [x0, y0, x1, y1] = [Infinity, Infinity, -Infinity, -Infinity];
-  for (const path of paths) {
-    for (const { x, y } of path) {
-      x0 = Math.min(x0, x);
-      y0 = Math.min(y0, y);
-      x1 = Math.max(x1, x);
-      y1 = Math.max(y1, y);
-    }
-  }
-  const across = x1 - x0 >= y1 - y0;
-  const [low, high] = across ? [x0, x1] : [y0, y1];
-  const at = Math.min(high - 1, Math.max(low + 1, cutAt(paths, across)));
-  const box: Rect64 = { left: x0, top: y0, right: x1, bottom: y1 };
+/** The two sides of a cut across the longer way of `box`. */
+function sides(paths: Paths64, box: Rect64, hole?: Rect64): Rect64[] {
+  const across = box.right - box.left >= box.bottom - box.top;
+  const [low, high] = across ? [box.left, box.right] : [box.top, box.bottom];
+  const middle = hole && Math.round((across ? hole.left + hole.right : hole.top + hole.bottom) / 2);
+  const at = Math.min(high - 1, Math.max(low + 1, middle ?? cutAt(paths, across)));
   return across
     ? [
         { ...box, right: at },
@@ -112,14 +181,8 @@ const SAMPLE = 500;
 
 function cutAt(paths: Paths64, across: boolean): number {
   const along = ({ x, y }: { x: number; y: number }): number => (across ? x : y);
-  const few = paths.length > 1 && paths.length <= 3;
-  if (few) {
-    const values = paths[1]!.map(along);
-    return Math.round((Math.min(...values) + Math.max(...values)) / 2);
-  }
   // of many points a sample tells the middle as well
-  const count = paths.reduce((sum, path) => sum + path.length, 0);
-  const stride = Math.ceil(count / SAMPLE);
+  const stride = Math.ceil(pointsOf(paths) / SAMPLE);
   const values: number[] = [];
   let skip = 0;
   for (const path of paths) {

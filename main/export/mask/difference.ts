@@ -1,0 +1,176 @@
+import { area, FillRule, type Path64, type Paths64, union, xor } from 'clipper2-ts';
+import { tiles } from './split.ts';
+
+/** Points that are compared at once. */
+const TILE = 1000;
+/** With more edges unlike, and more than this share of all, grounds are compared tile by tile. */
+const MANY = 1000;
+const UNLIKE = 0.25;
+
+/**
+ * Area between two sets of polygons, outer ones counter-clockwise, holes clockwise, nm²: ground that both cover
+ * equally often counts nothing, so what `b` covers twice and `a` once is told as well. Edges that both have, and
+ * those that two polygons of one set have in opposite directions, cancel out; what is left are the closed outlines
+ * of the difference. Where most of many edges are unlike, what is covered twice counts once.
+ */
+export function differenceOf(a: Paths64, b: Paths64): number {
+  const edges = new Edges(pointsOf(a));
+  for (const path of a) edges.add(path, 1);
+  for (const path of b) edges.add(path, -1);
+  const left = edges.left();
+  if (left.length > MANY && left.length > UNLIKE * edges.count) return tiled(a, b);
+  return areaOf(union(loopsOf(left), FillRule.NonZero));
+}
+
+function tiled(a: Paths64, b: Paths64): number {
+  let sum = 0;
+  for (const [p, q] of tiles(a, b, TILE)) sum += areaOf(xor(p, q, FillRule.NonZero));
+  return sum;
+}
+
+const pointsOf = (paths: Paths64): number => paths.reduce((sum, path) => sum + path.length, 0);
+const areaOf = (paths: Paths64): number => paths.reduce((sum, path) => sum + area(path), 0);
+
+type DirectedEdge = readonly [x0: number, y0: number, x1: number, y1: number];
+
+/** Directed edges with how often they are there; those along the axes point by point, the others as wholes. */
+class Edges {
+  count = 0;
+  /** By the coordinate of the line, in turns: a place along it, and by how much its edges become more there. */
+  readonly #upright = new Map<number, number[]>();
+  readonly #level = new Map<number, number[]>();
+  /** Slanted edges, four coordinates and how often. */
+  #slanted: Float64Array;
+  #wholes = 0;
+  /** Open addressing: numbers of slanted edges, from 1. */
+  #table: Int32Array;
+
+  /** @param expected about how many unlike edges there will be */
+  constructor(expected: number) {
+    const size = 2 ** Math.ceil(Math.log2(2.2 * expected + 16));
+    this.#table = new Int32Array(size);
+    this.#slanted = new Float64Array((5 * size) / 2 + 5);
+  }
+
+  add(path: Path64, times: number): void {
+    this.count += path.length;
+    let from = path[path.length - 1]!;
+    for (const to of path) {
+      if (from.x === to.x) put(this.#upright, from.x, from.y, to.y, times);
+      else if (from.y === to.y) put(this.#level, from.y, from.x, to.x, times);
+      else this.#whole(from.x, from.y, to.x, to.y, times);
+      from = to;
+    }
+  }
+
+  #whole(x0: number, y0: number, x1: number, y1: number, times: number): void {
+    if (2 * this.#wholes >= this.#table.length) this.#grow();
+    const place = this.#find(x0, y0, x1, y1);
+    const known = this.#table[place]!;
+    if (known > 0) {
+      this.#slanted[5 * known - 1]! += times;
+      return;
+    }
+    this.#slanted.set([x0, y0, x1, y1, times], 5 * this.#wholes);
+    this.#wholes += 1;
+    this.#table[place] = this.#wholes;
+  }
+
+  #find(x0: number, y0: number, x1: number, y1: number): number {
+    const mask = this.#table.length - 1;
+    let hash = Math.imul(x0, 0x9e3779b1) ^ Math.imul(y0, 0x85ebca6b);
+    hash =
+      Math.imul(hash ^ (hash >>> 15), 0x2c1b3c6d) + Math.imul(x1, 0xc2b2ae35) + Math.imul(y1, 0x27d4eb2f);
+    const s = this.#slanted;
+    for (let place = (hash ^ (hash >>> 15)) & mask; ; place = (place + 1) & mask) {
+      const at = 5 * (this.#table[place]! - 1);
+      if (at < 0) return place;
+      if (s[at] === x0 && s[at + 1] === y0 && s[at + 2] === x1 && s[at + 3] === y1) return place;
+    }
+  }
+
+  #grow(): void {
+    const old = this.#slanted;
+    this.#slanted = new Float64Array(2 * old.length);
+    this.#slanted.set(old);
+    this.#table = new Int32Array(2 * this.#table.length);
+    for (let k = 0; k < this.#wholes; k++) {
+      const at = 5 * k;
+      this.#table[this.#find(old[at]!, old[at + 1]!, old[at + 2]!, old[at + 3]!)] = k + 1;
+    }
+  }
+
+  left(): DirectedEdge[] {
+    const out: DirectedEdge[] = [];
+    const s = this.#slanted;
+    for (let at = 0; at < 5 * this.#wholes; at += 5) {
+      const [x0, y0, x1, y1, times] = [s[at]!, s[at + 1]!, s[at + 2]!, s[at + 3]!, s[at + 4]!];
+      for (let k = 0; k < times; k++) out.push([x0, y0, x1, y1]);
+      for (let k = 0; k > times; k--) out.push([x1, y1, x0, y0]);
+    }
+    for (const [x, changes] of this.#upright)
+      walk(changes, (low, high) => {
+        out.push([x, low, x, high]);
+      });
+    for (const [y, changes] of this.#level)
+      walk(changes, (low, high) => {
+        out.push([low, y, high, y]);
+      });
+    return out;
+  }
+}
+
+function put(lines: Map<number, number[]>, line: number, from: number, to: number, times: number): void {
+  const changes = lines.get(line);
+  if (changes) changes.push(from, times, to, -times);
+  else lines.set(line, [from, times, to, -times]);
+}
+
+/** Calls `found` with each stretch along a line as often as edges are left there, in their direction. */
+function walk(changes: readonly number[], found: (from: number, to: number) => void): void {
+  const order = Array.from({ length: changes.length / 2 }, (_, k) => 2 * k);
+  order.sort((i, j) => changes[i]! - changes[j]!);
+  let times = 0;
+  let before = 0;
+  for (const k of order) {
+    const at = changes[k]!;
+    if (at > before) {
+      for (let i = 0; i < times; i++) found(before, at);
+      for (let i = 0; i > times; i--) found(at, before);
+    }
+    times += changes[k + 1]!;
+    before = at;
+  }
+}
+
+/** Closed paths of edges of which as many lead to every point as away from it. */
+function loopsOf(edges: readonly DirectedEdge[]): Paths64 {
+  const away = new Map<string, { x: number; y: number }[]>();
+  const key = (x: number, y: number): string => `${x} ${y}`;
+  for (const [x0, y0, x1, y1] of edges) {
+    const to = { x: x1, y: y1 };
+    const known = away.get(key(x0, y0));
+    if (known) known.push(to);
+    else away.set(key(x0, y0), [to]);
+  }
+  const loops: Paths64 = [];
+  for (const [x, y] of edges) {
+    // each return to a point of the way closes a loop, which is taken off it
+    const way: Path64 = [{ x, y }];
+    const seen = new Map([[key(x, y), 0]]);
+    for (let next = away.get(key(x, y))?.pop(); next; ) {
+      const here = key(next.x, next.y);
+      const met = seen.get(here);
+      if (met === undefined) {
+        seen.set(here, way.length);
+        way.push(next);
+      } else {
+        const loop = way.splice(met + 1);
+        for (const point of loop) seen.delete(key(point.x, point.y));
+        loops.push([way[met]!, ...loop]);
+      }
+      next = away.get(here)?.pop();
+    }
+  }
+  return loops;
+}
