@@ -32,14 +32,25 @@ export interface SolveOptions {
  * @param memory what may be kept between solves of a chip that is being edited
  */
 export function solve(chip: Chip, options: SolveOptions = {}, memory: Memory = emptyMemory()): Result {
+  return solveInParts(chip, options, memory).whole();
+}
+
+/** A chip's result in two parts, the second for when it is asked for. */
+export interface SolvedInParts {
+  /** What the five answers are made from: all but routes that no limit needs and how cells are strained. */
+  readonly first: Result;
+  /** What `solve` returns, whatever was solved with the same memory meanwhile. */
+  whole(): Result;
+}
+
+/** As `solve`, for whoever waits for the five answers: what these do not need is found when it is asked for. */
+export function solveInParts(chip: Chip, options: SolveOptions, memory: Memory): SolvedInParts {
   const { graph, fluid, drives, lumped, flow } = networkOf(chip, options, memory);
   const depends = (targets: readonly Target[]): Gradient[] | null => memory.gradients(lumped, flow, targets);
   const slopes = (targets: readonly Target[]): Gradient[] | null => memory.slopes(lumped, flow, targets);
-  return withMaking(
-    report(chip, graph, fluid, lumped, flow, drives, depends, accuracyOf(options).flow),
-    { chip, graph, lumped, flow },
-    slopes,
-  );
+  const reported = report(chip, graph, fluid, lumped, flow, drives, depends, accuracyOf(options).flow);
+  const first = withMaking(reported.first, { chip, graph, lumped, flow }, slopes);
+  return { first, whole: () => reported.complete(first) };
 }
 
 /** A chip's network with its flows, and what it was made from. */

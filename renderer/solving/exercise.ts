@@ -1,7 +1,7 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { CellMemory } from '../../solver/lump/cells.ts';
 import { emptyMemory } from '../../solver/memory.ts';
-import { type SolveOptions, solve } from '../../solver/solve.ts';
+import { type SolveOptions, solveInParts } from '../../solver/solve.ts';
 import { verdicts } from '../verdict/verdicts.ts';
 
 /** Answers until the runtime has compiled most of what they take. */
@@ -30,8 +30,9 @@ export function exercise(chip: Chip, options: SolveOptions, { store, known }: Ce
     const variant = round % 2 === 0 ? { ...chip, channels: wider } : { ...chip, ports: [...ports] };
     round += 1;
     try {
-      const result = solve(variant, { ...options, haste: true }, memory);
-      verdicts({ chip: variant, result, trouble: '', waiting: memory.cells.waiting.length });
+      const parts = solveInParts(variant, { ...options, haste: true }, memory);
+      verdicts({ chip: variant, result: parts.first, trouble: '', waiting: memory.cells.waiting.length });
+      parts.whole();
     } catch {
       // such a chip has no answer, and needs none to be fast
       return false;

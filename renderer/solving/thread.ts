@@ -11,7 +11,13 @@ import type { Result } from '../../solver/chip/result.ts';
 import { knownSolution, lackingCells, settleWaiting } from '../../solver/lump/cells.ts';
 import { emptyMemory } from '../../solver/memory.ts';
 import { Problem } from '../../solver/problem/problem.ts';
-import { accuracyOf, type SolveOptions, solve } from '../../solver/solve.ts';
+import {
+  accuracyOf,
+  type SolvedInParts,
+  type SolveOptions,
+  solve,
+  solveInParts,
+} from '../../solver/solve.ts';
 import { verdicts } from '../verdict/verdicts.ts';
 import { showIn } from '../words/figure.ts';
 import { exercise } from './exercise.ts';
@@ -42,7 +48,8 @@ const MOST_WANTED = 256;
 /** An answer, and what it was made of. */
 interface Fresh {
   readonly graph: Graph | null;
-  readonly outcome: Outcome;
+  /** What could be told of it at once, and the rest, or why there is none. */
+  readonly parts: SolvedInParts | Refused;
   readonly waiting: readonly CellSpec[];
   readonly began: number;
 }
@@ -104,11 +111,20 @@ export function solvingThread(
   let open = 0;
   const cancelled = new Set<number>();
 
-  const outcomeOf = (which: Chip, haste = hand !== null, preview = false): Outcome => {
+  const outcomeOf = (result: () => Result): Outcome => {
     try {
-      return { ok: true, result: solve(which, { ...options, haste, preview }, memory) };
+      return { ok: true, result: result() };
     } catch (error) {
       return { ok: false, problem: refused(error) };
+    }
+  };
+  const solved = (which: Chip, haste = hand !== null): Outcome =>
+    outcomeOf(() => solve(which, { ...options, haste }, memory));
+  const inParts = (which: Chip, preview: boolean): SolvedInParts | Refused => {
+    try {
+      return solveInParts(which, { ...options, haste: hand !== null, preview }, memory);
+    } catch (error) {
+      return refused(error);
     }
   };
 
@@ -165,33 +181,35 @@ export function solvingThread(
     const began = performance.now();
     // a chip that cannot be solved gets no further than the one before it: its junctions are not wanted
     memory.cells.waiting = [];
-    const outcome = outcomeOf(which, hand !== null, preview);
+    const parts = inParts(which, preview);
+    stuck = !('first' in parts);
     let graph: Graph | null = null;
     try {
       graph = memory.graph(which);
     } catch {
       // the outcome says why there is none
     }
-    last = outcome.ok ? { chip: which, result: outcome.result } : null;
-    stuck = !outcome.ok;
+    last = 'first' in parts ? { chip: which, result: parts.first } : null;
     settled = !preview;
     ready = performance.now();
     took = ready - began;
-    return { graph, outcome, waiting: outcome.ok ? memory.cells.waiting : [], began };
+    return { graph, parts, waiting: stuck ? [] : memory.cells.waiting, began };
   };
-  const whole = ({ graph, outcome, waiting }: Fresh): Answered => {
+  const whole = ({ graph, parts, waiting }: Fresh): Answered => {
+    const outcome = 'first' in parts ? outcomeOf(parts.whole) : { ok: false as const, problem: parts };
     const known = graph && graph === sent;
     sent = graph;
     return { graph: known ? 'same' : graph && shownGraph(graph), outcome, waiting: waiting.length };
   };
   /** The answer in short, which is soon there and soon shown; the whole of it is sent when it is asked for. */
   const tellShort = (which: Chip, fresh: Fresh): void => {
-    const { outcome, waiting, began } = fresh;
+    const { parts, waiting, began } = fresh;
+    const problem = 'first' in parts ? null : parts;
     rest = { id: newest, fresh };
     const answers = verdicts({
       chip: which,
-      result: outcome.ok ? outcome.result : null,
-      trouble: outcome.ok ? '' : `${outcome.problem.what} ${outcome.problem.remedy}`,
+      result: 'first' in parts ? parts.first : null,
+      trouble: problem ? `${problem.what} ${problem.remedy}` : '',
       waiting: waiting.length,
     });
     const { timeOrigin } = performance;
@@ -206,7 +224,7 @@ export function solvingThread(
       const fresh = answerTo(chip, false);
       tellShort(chip, fresh);
       handOn(fresh.waiting);
-      if (fresh.outcome.ok && fresh.waiting.length === 0) exerciseLater();
+      if (!stuck && fresh.waiting.length === 0) exerciseLater();
     }
     if (!dragDue || !drag) return;
     dragDue = false;
@@ -279,7 +297,7 @@ export function solvingThread(
 
   const sweep = (id: number, variants: readonly Chip[], index: number): void => {
     if (index >= variants.length || cancelled.delete(id)) return;
-    tell({ kind: 'swept', id, index, outcome: outcomeOf(variants[index]!, false) });
+    tell({ kind: 'swept', id, index, outcome: solved(variants[index]!, false) });
     later(() => sweep(id, variants, index + 1));
   };
 
@@ -352,7 +370,7 @@ export function solvingThread(
         if (!chip) return;
         let outcome: Outcome;
         try {
-          outcome = outcomeOf(applyEdit(chip, order.edit));
+          outcome = solved(applyEdit(chip, order.edit));
         } catch (error) {
           outcome = { ok: false, problem: refused(error) };
         }

@@ -1,5 +1,6 @@
 import { solve } from '../sparse/solve.ts';
 import type { Edges } from './edges.ts';
+import { once } from './once.ts';
 import type { PreparedNetwork } from './prepare.ts';
 import type { NetworkSolution, NetworkSpec } from './spec.ts';
 
@@ -114,14 +115,6 @@ function edgesAt({ from, to, nodes }: Edges): (node: number) => Int32Array {
       }
     }
     return edge.subarray(start[node], start[node + 1]);
-  };
-}
-
-function once<T>(make: () => T): () => T {
-  let made: T | undefined;
-  return () => {
-    made ??= make();
-    return made;
   };
 }
 

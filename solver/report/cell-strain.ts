@@ -22,13 +22,17 @@ export function withStrain(
     spec.faces.forEach(({ node }, i) => {
       power += flow.pressure[node] * into[i];
     });
+    // errors and tolerances stand last, whatever was found first
+    const { band, making, ...found } = cell;
     return {
-      ...cell,
+      ...found,
       stretch: paths.stretch,
       dissipation: {
         mean: power / paths.volume,
         peak: cell.peakWallShear === null ? null : cell.peakWallShear ** 2 / paths.viscosity,
       },
+      ...(band && { band }),
+      ...(making && { making }),
     };
   });
 }

@@ -14,7 +14,7 @@ type CurveLimit = Extract<Limit, { curve: unknown }>;
  * used up at the worst stress. The limit is 1, all of it.
  */
 export function curveLimit(limit: CurveLimit, { chip, exposure }: Evidence): Judged {
-  const { net, paths } = exposure;
+  const { net, paths } = exposure();
   const inside = covers(limit, chip);
   let worst: { use: CurveUse; where: string; route: [string, string]; path: 'mean' | 'wall-hugging' } | null =
     null;

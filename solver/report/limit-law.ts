@@ -13,7 +13,8 @@ import { type Evidence, type Judged, notJudged } from './limits.ts';
  * names a cell, along the wall: dose of one pass times the passes. `where` is the place that gives most of it.
  */
 export function lawLimit(limit: LawLimit, evidence: Evidence): Judged {
-  const { chip, exposure } = evidence;
+  const { chip } = evidence;
+  const exposure = evidence.exposure();
   let worst = -1;
   let at = -1;
   let path: 'mean' | 'wall-hugging' = 'mean';
@@ -63,8 +64,9 @@ function mostHarmful(
   limit: LawLimit,
   route: Route,
   path: 'mean' | 'wall-hugging',
-  { chip, exposure }: Evidence,
+  { chip, exposure: found }: Evidence,
 ): string {
+  const exposure = found();
   const { crossing, element } = exposure.net;
   const exponent = doseExponent(limit.law);
   const inside = covers(limit, chip);

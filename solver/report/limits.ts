@@ -21,7 +21,8 @@ export interface Evidence {
   readonly flow: NetworkSolution;
   readonly channels: readonly ChannelResult[];
   readonly cells: readonly CellResult[];
-  readonly exposure: Exposure;
+  /** Found when a limit first asks for it. */
+  readonly exposure: () => Exposure;
   readonly between: Between;
 }
 

@@ -1,14 +1,15 @@
 import { DEFAULT_ACCURACY } from '../cell/cell.ts';
 import { checkFindings } from '../checks/check.ts';
 import { withAccepted } from '../checks/gather.ts';
-import type { Chip } from '../chip/chip.ts';
+import type { Chip, Limit } from '../chip/chip.ts';
 import type { Graph } from '../chip/graph.ts';
-import type { ChannelResult, PieceResult, PortResult, Result } from '../chip/result.ts';
+import type { ChannelResult, PieceResult, PortResult, Result, RouteResult } from '../chip/result.ts';
 import { ductsBetween } from '../exposure/reach.ts';
 import type { Fluid } from '../fluid/fluid.ts';
 import type { DriveCheck } from '../lump/floating.ts';
 import type { Lumped } from '../lump/lump.ts';
 import { NANOMETRES } from '../lump/stretches.ts';
+import { once } from '../network/once.ts';
 import type { Gradient, Target } from '../network/sensitivity.ts';
 import type { NetworkSolution } from '../network/spec.ts';
 import type { Finding } from '../problem/finding.ts';
@@ -27,7 +28,18 @@ import { lawPieceResult, pieceResult } from './pieces.ts';
 import { pumpResults } from './pumps.ts';
 import { stillDucts } from './still.ts';
 import { targetResults } from './targets.ts';
-import { withBands } from './told-bands.ts';
+import { placeBands, routesWithBands, withBands } from './told-bands.ts';
+
+/** A result in two parts: what the five answers are made from, and what tables and plots show besides. */
+export interface Reported {
+  /**
+   * The result but for routes, what is noted of them, and how cells are strained. Where a limit is of routes,
+   * routes are in it.
+   */
+  readonly first: Result;
+  /** The whole of it, of the first part or of what was added to that; needs nothing of later solves. */
+  complete(first: Result): Result;
+}
 
 /**
  * The solved network in the chip's own terms.
@@ -42,7 +54,7 @@ export function report(
   drives: DriveCheck,
   depends: (targets: readonly Target[]) => Gradient[] | null,
   asked = DEFAULT_ACCURACY.flow,
-): Result {
+): Reported {
   const flows = ductFlows(graph, lumped, flow, drives);
   const pieces = lumped.stretches.map((stretch, index) => {
     const duct = lumped.ducts[index];
@@ -57,8 +69,7 @@ export function report(
   const { cells, findings: cellFindings } = cellResults(chip, lumped, flow);
   const between = (start: string, goal: string): Set<string> =>
     piecesBetween(chip, lumped, flow, start, goal);
-  const net = chipNet(chip, graph, fluid, lumped, flow, pieces, cells);
-  const exposure = exposureOf(chip, net);
+  const exposure = once(() => exposureOf(chip, chipNet(chip, graph, fluid, lumped, flow, pieces, cells)));
   const pumps = pumpResults(chip, lumped, flow);
   const drift = driftOf(chip, lumped, flow, fluid.density);
   const limits = limitResults({ chip, graph, lumped, flow, channels, cells, exposure, between });
@@ -81,31 +92,14 @@ export function report(
     cells: cellEvidence(chip, graph, lumped),
     asked,
   });
-  const told = {
-    ports,
-    channels,
-    cells: chip.limits.length > 0 ? withStrain(cells, net, lumped, flow) : cells,
-    routes: exposure.results,
-    targets,
-    limits: limits.results,
+  const routed = chip.limits.some(ofRoutes);
+  const places = bands && placeBands(cells, lumped.names, bands);
+  const routesOf = (ports: readonly PortResult[]): readonly RouteResult[] => {
+    const { results, net } = exposure();
+    return places ? routesWithBands(chip, results, ports, places, net) : results;
   };
-  return {
-    format: 'channelwright-result',
-    version: 1,
-    chip: chip.name,
-    status: 'solved',
-    junctions,
-    fluid: { viscosity: fluid.viscosity, density: fluid.density },
-    ...(bands ? withBands(chip, told, lumped.names, net, bands) : told),
-    pumps: pumps.pumps,
-    ...(drift ? { drift: drift.drift } : {}),
-    balance: {
-      conservationResidual: flow.conservationResidual,
-      powerIn: flow.powerIn,
-      dissipation: flow.dissipation,
-    },
-    ...(bands && { bands: bands.chip }),
-    findings: withAccepted(
+  const findingsWith = (ofRoutes: readonly Finding[]): readonly Finding[] =>
+    withAccepted(
       [
         ...graph.findings,
         ...drives.findings,
@@ -113,7 +107,7 @@ export function report(
         ...unresolvedFindings(lumped, flows),
         ...limits.findings,
         ...closeCalls(chip, { limits: limits.results, targets, bands, rough }),
-        ...exposure.findings,
+        ...ofRoutes,
         ...pumps.findings,
         ...(drift?.findings ?? []),
         ...cellFindings,
@@ -123,9 +117,47 @@ export function report(
         ...checks,
       ],
       chip.accepted,
-    ),
+    );
+  const told = {
+    ports,
+    channels,
+    cells,
+    routes: routed ? exposure().results : [],
+    targets,
+    limits: limits.results,
+  };
+  const first: Result = {
+    format: 'channelwright-result',
+    version: 1,
+    chip: chip.name,
+    status: 'solved',
+    junctions,
+    fluid: { viscosity: fluid.viscosity, density: fluid.density },
+    ...(places ? withBands(chip, told, places, routed ? routesOf : () => []) : told),
+    pumps: pumps.pumps,
+    ...(drift ? { drift: drift.drift } : {}),
+    balance: {
+      conservationResidual: flow.conservationResidual,
+      powerIn: flow.powerIn,
+      dissipation: flow.dissipation,
+    },
+    ...(bands && { bands: bands.chip }),
+    findings: findingsWith(routed ? exposure().findings : []),
+  };
+  return {
+    first,
+    complete: (known) => ({
+      ...known,
+      cells: chip.limits.length > 0 ? withStrain(known.cells, exposure().net, lumped, flow) : known.cells,
+      routes: routed ? known.routes : routesOf(known.ports),
+      findings: findingsWith(exposure().findings),
+    }),
   };
 }
+
+/** Whether a limit is judged on routes, or by a cell that may be too large for what they pass. */
+const ofRoutes = (limit: Limit): boolean =>
+  'law' in limit || 'curve' in limit || limit.cellDiameter !== undefined;
 
 /** Flow of every duct: 0 where it is joined so that nothing can flow, null where too small for its digits. */
 function ductFlows(

@@ -1,5 +1,6 @@
 import type { Chip, Limit } from '../chip/chip.ts';
 import type {
+  CellResult,
   LimitResult,
   PieceResult,
   PortResult,
@@ -7,37 +8,63 @@ import type {
   RouteResult,
   TargetResult,
 } from '../chip/result.ts';
+import { once } from '../network/once.ts';
 import type { ErrorBands } from './bands.ts';
 import type { ChipNet } from './flow-net.ts';
 
 type Told = Pick<Result, 'ports' | 'channels' | 'cells' | 'routes' | 'targets' | 'limits'>;
 
+/** Bands by the names of pieces and cells. */
+export interface PlaceBands {
+  readonly bands: ErrorBands;
+  readonly piece: (name: string) => NonNullable<PieceResult['band']> | null;
+  readonly cell: (name: string) => NonNullable<CellResult['band']> | null;
+  readonly isCell: (name: string) => boolean;
+  /** Error of a piece's resistance, of which the doubt of its length is a part. */
+  readonly duct: (name: string) => number;
+}
+
+/** @param names of the pieces, in the order of their bands */
+export function placeBands(
+  cells: readonly CellResult[],
+  names: readonly string[],
+  bands: ErrorBands,
+): PlaceBands {
+  const pieceAt = once(() => new Map(names.map((name, e) => [name, e])));
+  const cellAt = once(() => new Map(cells.map(({ id }, i) => [id, i])));
+  // where no piece has a band of its own, none need be looked for
+  const own = bands.pieces.some((band) => band !== null);
+  return {
+    bands,
+    piece: (name) => (own ? (bands.pieces[pieceAt().get(name) ?? -1] ?? null) : null),
+    cell: (name) => bands.cells[cellAt().get(name) ?? -1] ?? null,
+    isCell: (name) => cellAt().has(name),
+    duct: (name) => bands.ducts[pieceAt().get(name) ?? -1] ?? 0,
+  };
+}
+
+const shearAt = ({ bands, piece, cell }: PlaceBands, where: string): number =>
+  piece(where)?.shear ?? cell(where)?.shear ?? bands.chip.shear;
+
 /**
  * Ports, pieces, cells, routes, targets and limits with how far each may be off, as `Bands`. Where a large chip's
  * pieces have no band of their own, the worst of the chip stands for it.
+ *
+ * @param routesOf routes as `routesWithBands` gives them, of ports that have theirs
  */
 export function withBands(
   chip: Chip,
   told: Told,
-  names: readonly string[],
-  net: ChipNet,
-  bands: ErrorBands,
+  places: PlaceBands,
+  routesOf: (ports: readonly PortResult[]) => readonly RouteResult[],
 ): Told {
-  const pieces = new Map(names.map((name, e) => [name, { band: bands.pieces[e], duct: bands.ducts[e] }]));
-  const cells = new Map(told.cells.map(({ id }, i) => [id, bands.cells[i]]));
+  const { bands, piece } = places;
   const ports = told.ports.map((port, i) => banded(port, bands.ports[i]));
   const channels = told.channels.map(({ id, pieces: own }) => ({
     id,
-    pieces: own.map((piece, i) => banded(piece, pieces.get(`${id}#${i + 1}`)?.band)),
+    pieces: own.map((one, i) => banded(one, piece(`${id}#${i + 1}`))),
   }));
-  const shearAt = (where: string): number =>
-    pieces.get(where)?.band?.shear ?? cells.get(where)?.shear ?? bands.chip.shear;
-  const routes = routeBands(chip, told.routes, ports, {
-    flowIn: (name) => pieces.get(name)?.band?.flow ?? (cells.has(name) ? 0 : bands.chip.flow),
-    lengthOf: (name) => pieces.get(name)?.duct ?? 0,
-    shearAt,
-    rounding: roundingOf(net),
-  });
+  const routes = routesOf(ports);
   return {
     ports,
     channels,
@@ -46,7 +73,7 @@ export function withBands(
     targets: told.targets.map((target, i) =>
       targetBand(target, 'share' in chip.targets[i], { ports, channels }),
     ),
-    limits: told.limits.map((limit, i) => limitBand(limit, chip.limits[i], shearAt, routes)),
+    limits: told.limits.map((limit, i) => limitBand(limit, chip.limits[i], places, routes)),
   };
 }
 
@@ -63,20 +90,16 @@ function roundingOf({ crossing, element }: ChipNet): Map<string, number> {
   return found;
 }
 
-interface Known {
-  readonly flowIn: (name: string) => number;
-  /** Error of a piece's resistance, of which the doubt of its length is a part. */
-  readonly lengthOf: (name: string) => number;
-  readonly shearAt: (where: string) => number;
-  readonly rounding: ReadonlyMap<string, number>;
-}
-
-function routeBands(
+export function routesWithBands(
   chip: Chip,
   routes: readonly RouteResult[],
   ports: readonly PortResult[],
-  { flowIn, lengthOf, shearAt, rounding }: Known,
+  places: PlaceBands,
+  net: ChipNet,
 ): RouteResult[] {
+  const rounding = roundingOf(net);
+  const flowIn = (name: string): number =>
+    places.piece(name)?.flow ?? (places.isCell(name) ? 0 : places.bands.chip.flow);
   const own = new Map(ports.map(({ id, band }) => [id, band]));
   const [outs, ins] = [new Map<string, number>(), new Map<string, number>()];
   for (const { from, to } of routes) {
@@ -95,8 +118,8 @@ function routeBands(
     const along = route.path?.map(({ name }) => name) ?? [];
     const most = (of: (name: string) => number): number => Math.max(0, ...along.map(of));
     const flow = Math.max(a.flow, b.flow, most(flowIn));
-    const time = flow + most(lengthOf);
-    const shear = shearAt(route.peakAt ?? '');
+    const time = flow + most(places.duct);
+    const shear = shearAt(places, route.peakAt ?? '');
     const round = along.length > 0 ? most((name) => rounding.get(name) ?? 0) : everywhere;
     const wall = Math.max(time, shear) + round;
     return {
@@ -132,11 +155,11 @@ function targetBand(
 function limitBand(
   result: LimitResult,
   limit: Limit,
-  shearAt: (where: string) => number,
+  places: PlaceBands,
   routes: readonly RouteResult[],
 ): LimitResult {
   if (result.worst === null) return result;
-  if ('shear' in limit) return { ...result, band: shearAt(result.where) };
+  if ('shear' in limit) return { ...result, band: shearAt(places, result.where) };
   if (!('law' in limit) || !result.route) return result;
   const [from, to] = result.route;
   const route = routes.find((one) => one.from === from && one.to === to);
