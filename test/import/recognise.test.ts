@@ -190,6 +190,42 @@ test('a taper keeps the widths at its ends', () => {
   expect(deviation.difference).toBe(0);
 });
 
+test('a taper that a channel opens into on its way is one taper', () => {
+  const { channels, deviation } = channelsOf([
+    [
+      [1000, 900],
+      [6000, 850],
+      [6000, 1150],
+      [1000, 1100],
+    ],
+    // 50 wide, direction (4, 3) / 5, its centreline through (1000, 1000)
+    [
+      [1025, 1050],
+      [1055, 1010],
+      [4215, 3380],
+      [4185, 3420],
+    ],
+  ]);
+  expect(channels).toEqual([
+    even(
+      [
+        [1000, 1000],
+        [4200, 3400],
+      ],
+      50,
+    ),
+    {
+      path: [
+        [1000, 1000],
+        [6000, 1000],
+      ],
+      width: [200, 300],
+      bend: 0,
+    },
+  ]);
+  expect(deviation.difference).toBeLessThan(1e-7 * deviation.perimeter);
+});
+
 test('a step of the width parts two channels', () => {
   const { channels } = channelsOf([
     [

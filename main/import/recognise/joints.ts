@@ -50,6 +50,9 @@ interface Arm {
   /** Of even width, so that it may go on as the same channel. */
   readonly even: boolean;
   readonly straight: boolean;
+  /** By how much a straight taper grows out of this end, per nm; 0 for others. */
+  readonly growth: number;
+  readonly length: number;
 }
 
 function joinKnot(knot: Knot, strips: readonly Strip[], places: readonly [EndPlace, EndPlace][]): void {
@@ -62,6 +65,8 @@ function joinKnot(knot: Knot, strips: readonly Strip[], places: readonly [EndPla
       place: places[of.strip][of.end],
       even: axis !== null && axis.slope === 0,
       straight: axis?.kind === 'line',
+      growth: axis?.kind === 'line' ? axis.slope * (of.end === 1 ? 1 : -1) : 0,
+      length: strip.length,
     };
   });
   if (arms.length === 0) return;
@@ -87,7 +92,9 @@ function joinKnot(knot: Knot, strips: readonly Strip[], places: readonly [EndPla
   const through: Arm[] = [];
   for (const a of arms) {
     if (!left.has(a)) continue;
-    const b = [...left].find((other) => other !== a && inLine(a.end, other.end) && matches(a, other));
+    const b = [...left].find(
+      (other) => other !== a && inLine(a.end, other.end) && (matches(a, other) || tapersOn(a, other)),
+    );
     if (!b || !a.straight || !b.straight) continue;
     left.delete(a);
     left.delete(b);
@@ -113,6 +120,15 @@ function mate(a: Arm, b: Arm): void {
 }
 
 const matches = (a: Arm, b: Arm): boolean => a.even && b.even && same(a.end.width, b.end.width);
+
+/** Whether two straight tapers on one line are one that something opens into on its way. */
+function tapersOn(a: Arm, b: Arm): boolean {
+  if (a.growth === 0 || b.growth === 0) return false;
+  const gap = Math.hypot(b.end.x - a.end.x, b.end.y - a.end.y);
+  if (!same(a.end.width + a.growth * gap, b.end.width)) return false;
+  const unlike = Math.abs(a.growth + b.growth) * Math.min(a.length, b.length);
+  return unlike <= SAME_NM + SAME_SHARE * Math.max(a.end.width, b.end.width);
+}
 
 /** Whether two ends look at each other along one line. */
 function inLine(a: StripEnd, b: StripEnd): boolean {
@@ -226,10 +242,22 @@ function chained(strips: readonly Strip[], places: readonly [EndPlace, EndPlace]
     });
   };
   strips.forEach((strip, s) => {
+    if (used[s]) return;
     if (strip.soft) softCourses(strip.soft, places[s], out);
     else if (!strip.axis || strip.axis.slope === 0) return;
-    else if (strip.axis.kind === 'line') taperCourse(strip, places[s], out);
-    else taperedBend(strip, places[s], out);
+    else if (strip.axis.kind === 'line') {
+      const ends = ([0, 1] as const).map((first) => {
+        let end: 0 | 1 = first;
+        let last = s;
+        for (let { mate } = places[s][end]; mate && !used[mate.strip]; { mate } = places[last][end]) {
+          last = mate.strip;
+          end = mate.end === 0 ? 1 : 0;
+          used[last] = 1;
+        }
+        return { strip: strips[last], end, place: places[last][end] };
+      });
+      taperCourse(ends, out);
+    } else taperedBend(strip, places[s], out);
     used[s] = 1;
   });
   for (const open of [true, false]) {
@@ -270,16 +298,21 @@ function stepsOf(
   return steps;
 }
 
-function taperCourse({ axis, ends }: Strip, places: readonly [EndPlace, EndPlace], out: Joined): void {
-  if (axis?.kind !== 'line') return;
-  const width = places.map(({ x, y }, k) => {
+/** A straight taper from one end to the other, of one strip or of several that carry on from each other. */
+function taperCourse(
+  ends: readonly { readonly strip: Strip; readonly end: 0 | 1; readonly place: EndPlace }[],
+  out: Joined,
+): void {
+  const width = ends.map(({ strip, end, place: { x, y } }) => {
+    const { axis } = strip;
+    if (axis?.kind !== 'line') return 1;
     const s = (x - axis.x) * axis.ux + (y - axis.y) * axis.uy;
-    return Math.max(1, Math.round(Math.min(widthOn(axis, s), 2 * ends[k].width + 1)));
+    return Math.max(1, Math.round(Math.min(widthOn(axis, s), 2 * strip.ends[end].width + 1)));
   });
-  const path = places.map(({ x, y }) => [Math.round(x), Math.round(y)] as const);
+  const path = ends.map(({ place: { x, y } }) => [Math.round(x), Math.round(y)] as const);
   if (path[0][0] === path[1][0] && path[0][1] === path[1][1]) return;
   out.courses.push({ path, width: [width[0], width[1]], bendRadius: 0 });
-  out.into.push([places[0].into, places[1].into]);
+  out.into.push([ends[0].place.into, ends[1].place.into]);
 }
 
 /** A bend whose width changes along it, as channels that do so too. */
