@@ -198,21 +198,21 @@ test('a taper that a channel opens into on its way is one taper', () => {
       [6000, 1150],
       [1000, 1100],
     ],
-    // 50 wide, direction (4, 3) / 5, its centreline through (1000, 1000)
+    // 52 wide, direction (12, 5) / 13, its centreline through (1000, 1000)
     [
-      [1025, 1050],
-      [1055, 1010],
-      [4215, 3380],
-      [4185, 3420],
+      [1014, 1034],
+      [1034, 986],
+      [4610, 2476],
+      [4590, 2524],
     ],
   ]);
   expect(channels).toEqual([
     even(
       [
         [1000, 1000],
-        [4200, 3400],
+        [4600, 2500],
       ],
-      50,
+      52,
     ),
     {
       path: [
