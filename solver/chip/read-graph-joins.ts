@@ -36,6 +36,7 @@ export function joinChannels(drawing: Drawing, links: Links): Encounters {
   if (!index) return found;
   const { data, channel } = elements;
   const meetings = new Meetings();
+  const here: Here = { node: -1, s: 0 };
   let pairs = 0;
   for (let i = 0; i < elements.count; i++) {
     const near: number[] = index.search(
@@ -47,12 +48,13 @@ export function joinChannels(drawing: Drawing, links: Links): Encounters {
     );
     if (near.length > 1) near.sort((p, q) => p - q);
     const a = channel[i]!;
+    here.node = -1;
     for (const j of near) {
       const b = channel[j]!;
       if (layerOf[b] !== layerOf[a] || (a === b && j === i + 1)) continue;
       meetElements(elements, i, j, meetings);
       const { count } = meetings;
-      for (let k = 0; k < count; k++) addJoin(elements, links, i, meetings.s[k]!, j, meetings.t[k]!);
+      for (let k = 0; k < count; k++) addJoin(elements, links, here, i, meetings.s[k]!, j, meetings.t[k]!);
       if (++pairs > MOST_PAIRS) throw tooMany(drawing);
       if (count > 0) {
         const bent = data[i * STRIDE + CURVATURE] !== data[j * STRIDE + CURVATURE];
@@ -66,18 +68,38 @@ export function joinChannels(drawing: Drawing, links: Links): Encounters {
   return found;
 }
 
-function addJoin(elements: Elements, links: Links, i: number, s: number, j: number, t: number): void {
+/** The node last made on an element, and where: several channels that meet in one point make one. */
+interface Here {
+  node: number;
+  s: number;
+}
+
+/** nm; what is nearer is one point but for rounding, and much less than what counts as touching. */
+const ONE_POINT = 1e-3;
+
+function addJoin(
+  elements: Elements,
+  links: Links,
+  here: Here,
+  i: number,
+  s: number,
+  j: number,
+  t: number,
+): void {
   const { data: d, channel } = elements;
   const a = i * STRIDE;
   const b = j * STRIDE;
-  let x = d[a + X0]! + d[a + UX]! * s;
-  let y = d[a + Y0]! + d[a + UY]! * s;
-  if (d[a + CURVATURE] !== 0) [x, y] = pointAt(elements.curve(i), s);
-  const node = links.addNode(x, y);
-  const sa = d[a + S0]! + s;
+  if (here.node < 0 || Math.abs(s - here.s) > ONE_POINT) {
+    let x = d[a + X0]! + d[a + UX]! * s;
+    let y = d[a + Y0]! + d[a + UY]! * s;
+    if (d[a + CURVATURE] !== 0) [x, y] = pointAt(elements.curve(i), s);
+    const sa = d[a + S0]! + s;
+    const halfA = d[a + H0]! + ((d[a + H1]! - d[a + H0]!) * s) / d[a + LENGTH]!;
+    here.node = links.addNode(x, y);
+    here.s = s;
+    links.addMark(here.node, channel[i]!, sa, sa, halfA);
+  }
   const sb = d[b + S0]! + t;
-  const halfA = d[a + H0]! + ((d[a + H1]! - d[a + H0]!) * s) / d[a + LENGTH]!;
   const halfB = d[b + H0]! + ((d[b + H1]! - d[b + H0]!) * t) / d[b + LENGTH]!;
-  links.addMark(node, channel[i]!, sa, sa, halfA);
-  links.addMark(node, channel[j]!, sb, sb, halfB);
+  links.addMark(here.node, channel[j]!, sb, sb, halfB);
 }

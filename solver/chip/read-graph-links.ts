@@ -13,14 +13,14 @@ export class Links {
   /** Sum of the places of the node's joins, and how many. */
   x: Float64Array;
   y: Float64Array;
-  weight: Float64Array;
-  /** Per mark: channel and node, interval of the distance along, and the part of it that pieces are measured from. */
+  weight: Int32Array;
+  /** Per mark: channel and node, and interval of the distance along. */
   channel: Int32Array;
   node: Int32Array;
   low: Float64Array;
   high: Float64Array;
-  coreLow: Float64Array;
-  coreHigh: Float64Array;
+  /** The place that pieces are measured from, of the few marks where that is not their own edges. */
+  readonly #core = new Map<number, number>();
   /** Channels taken on beyond their drawn ends: where to, and how far, nm. */
   readonly head = new Map<number, Extension>();
   readonly tail = new Map<number, Extension>();
@@ -33,14 +33,12 @@ export class Links {
     this.stout = new Float64Array(nodes);
     this.x = new Float64Array(nodes);
     this.y = new Float64Array(nodes);
-    this.weight = new Float64Array(nodes);
+    this.weight = new Int32Array(nodes);
     const marks = 2 * nodes;
     this.channel = new Int32Array(marks);
     this.node = new Int32Array(marks);
     this.low = new Float64Array(marks);
     this.high = new Float64Array(marks);
-    this.coreLow = new Float64Array(marks);
-    this.coreHigh = new Float64Array(marks);
   }
 
   addNode(x: number, y: number): number {
@@ -63,8 +61,7 @@ export class Links {
     this.node[id] = node;
     this.low[id] = low;
     this.high[id] = high;
-    this.coreLow[id] = core ?? low;
-    this.coreHigh[id] = core ?? high;
+    if (core !== undefined) this.#core.set(id, core);
     if (half < this.slim[node]!) this.slim[node] = half;
     if (half > this.stout[node]!) this.stout[node] = half;
   }
@@ -75,7 +72,7 @@ export class Links {
     this.stout = longer(this.stout, new Float64Array(size));
     this.x = longer(this.x, new Float64Array(size));
     this.y = longer(this.y, new Float64Array(size));
-    this.weight = longer(this.weight, new Float64Array(size));
+    this.weight = longer(this.weight, new Int32Array(size));
   }
 
   #growMarks(size: number): void {
@@ -83,8 +80,15 @@ export class Links {
     this.node = longer(this.node, new Int32Array(size));
     this.low = longer(this.low, new Float64Array(size));
     this.high = longer(this.high, new Float64Array(size));
-    this.coreLow = longer(this.coreLow, new Float64Array(size));
-    this.coreHigh = longer(this.coreHigh, new Float64Array(size));
+  }
+
+  /** Where a piece that ends at the lower (or upper) edge of a mark is measured from. */
+  coreLow(mark: number): number {
+    return this.#core.get(mark) ?? this.low[mark]!;
+  }
+
+  coreHigh(mark: number): number {
+    return this.#core.get(mark) ?? this.high[mark]!;
   }
 
   root(node: number): number {

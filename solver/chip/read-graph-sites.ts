@@ -20,11 +20,15 @@ export interface SiteDraft {
   readonly name: string;
   readonly kind: SiteKind;
   readonly at: Point;
-  readonly layers: string[];
-  readonly chambers: string[];
-  readonly ports: string[];
-  readonly vias: string[];
+  layers: readonly string[];
+  readonly chambers: readonly string[];
+  readonly ports: readonly string[];
+  readonly vias: readonly string[];
+  readonly arms: { readonly piece: number; readonly end: 'from' | 'to' }[];
 }
+
+/** Most sites have none: they share it. */
+const NONE: readonly string[] = [];
 
 /** Marks of each channel in order of distance: `order` lists mark numbers, channel c from start[c] to start[c+1]. */
 interface Ordered {
@@ -99,18 +103,21 @@ function uniteNeighbours(drawing: Drawing, links: Links, { start, order }: Order
   }
 }
 
-/** Unites nodes that are one place on some channel, then numbers the sites in drawing order. */
+/**
+ * Unites nodes that are one place on some channel, then numbers the sites in drawing order. What each channel
+ * holds goes to `take`, channel by channel: kept for all of them it would be most of what a large drawing is.
+ */
 export function readSites(
   drawing: Drawing,
   links: Links,
   places: Places,
-): { drafts: SiteDraft[]; holds: Hold[][]; portSite: Int32Array } {
+  take: (channel: number, holds: readonly Hold[]) => void,
+): { sites: SiteDraft[]; portSite: Int32Array } {
   const { chip, elements } = drawing;
   const channels = chip.channels.length;
   const { start, order } = orderMarks(links, channels);
   uniteNeighbours(drawing, links, { start, order });
   const labels = new Labels(chip, links, places);
-  const holds: Hold[][] = [];
   for (let c = 0; c < channels; c++) {
     const length = elements.total(c);
     const list: Hold[] = [];
@@ -125,16 +132,16 @@ export function readSites(
       const gap = last ? links.low[m]! - last.high : Infinity;
       if (last && last.site === site && gap <= Math.max(TOUCH, links.stout[root]!)) {
         last.high = Math.max(last.high, links.high[m]!);
-        last.coreLow = Math.min(last.coreLow, links.coreLow[m]!);
-        last.coreHigh = Math.max(last.coreHigh, links.coreHigh[m]!);
+        last.coreLow = Math.min(last.coreLow, links.coreLow(m));
+        last.coreHigh = Math.max(last.coreHigh, links.coreHigh(m));
         continue;
       }
       const hold = {
         site,
         low: links.low[m]!,
         high: links.high[m]!,
-        coreLow: links.coreLow[m]!,
-        coreHigh: links.coreHigh[m]!,
+        coreLow: links.coreLow(m),
+        coreHigh: links.coreHigh(m),
       };
       if (!last && hold.low > from + TOUCH && !stub(drawing, links, order, start, c, root, from, hold.low)) {
         list.push(labels.endHold(drawing, c, false));
@@ -147,11 +154,11 @@ export function readSites(
     if (last.high < to - TOUCH && (root < 0 || !stub(drawing, links, order, start, c, root, to, last.high))) {
       list.push(labels.endHold(drawing, c, true));
     }
-    holds.push(list);
+    take(c, list);
   }
   labels.rest();
   const portSite = Int32Array.from(places.ports, (node) => labels.siteOf[links.root(node)]!);
-  return { drafts: labels.drafts, holds, portSite };
+  return { sites: labels.drafts, portSite };
 }
 
 /** An end that overshoots a crossing but stays within the other channel is no dead end. */
@@ -181,7 +188,7 @@ function stub(
 }
 
 function addLayer(draft: SiteDraft, layer: string): void {
-  if (!draft.layers.includes(layer)) draft.layers.push(layer);
+  if (!draft.layers.includes(layer)) draft.layers = [...draft.layers, layer];
 }
 
 /** Names sites as they are first met, channel by channel. */
@@ -192,6 +199,8 @@ class Labels {
   readonly #links: Links;
   readonly #chip: Chip;
   readonly #special = new Map<number, { chambers: number[]; vias: number[]; ports: number[] }>();
+  /** The list of each layer alone, which most sites share. */
+  readonly #layers = new Map<string, readonly string[]>();
   #junctions = 0;
   #ends = 0;
 
@@ -226,14 +235,24 @@ class Labels {
         name: `junction:${this.#junctions}`,
         kind: 'junction',
         at: [this.#links.x[root]! / n, this.#links.y[root]! / n],
-        layers: [],
-        chambers: [],
-        ports: [],
-        vias: [],
+        layers: this.#alone(layer),
+        chambers: NONE,
+        ports: NONE,
+        vias: NONE,
+        arms: [],
       });
     }
     addLayer(this.drafts[id]!, layer);
     return id;
+  }
+
+  #alone(layer: string): readonly string[] {
+    let list = this.#layers.get(layer);
+    if (!list) {
+      list = [layer];
+      this.#layers.set(layer, list);
+    }
+    return list;
   }
 
   #place(special: { chambers: number[]; vias: number[]; ports: number[] }): SiteDraft {
@@ -250,6 +269,7 @@ class Labels {
       chambers: chambers.map((c) => c.id),
       vias: vias.map((v) => v.id),
       ports: ports.map((p) => p.id),
+      arms: [],
     };
     if (chambers.length > 0) {
       const at = centroid(chambers[0]!.outline);
@@ -269,10 +289,11 @@ class Labels {
       name: `end:${this.#ends}`,
       kind: 'end',
       at: atEnd ? [c.x1, c.y1] : [c.x0, c.y0],
-      layers: [this.#chip.channels[channel]!.layer],
-      chambers: [],
-      ports: [],
-      vias: [],
+      layers: this.#alone(this.#chip.channels[channel]!.layer),
+      chambers: NONE,
+      ports: NONE,
+      vias: NONE,
+      arms: [],
     });
     return { site, low: s, high: s, coreLow: s, coreHigh: s };
   }

@@ -1,6 +1,6 @@
 import type { Finding } from '../problem/finding.ts';
 import type { Chip } from './chip.ts';
-import type { Graph, Piece, Site } from './graph.ts';
+import type { Graph, Piece } from './graph.ts';
 import { readPlaces } from './read-graph-areas.ts';
 import { drawingOf } from './read-graph-drawing.ts';
 import { joinChannels } from './read-graph-joins.ts';
@@ -20,28 +20,26 @@ export function readGraph(chip: Chip): Graph {
   const encounters = joinChannels(drawing, links);
   const places = readPlaces(drawing, links, findings);
   readOverlaps(drawing, links, encounters, places.areas, findings);
-  const { drafts, holds, portSite } = readSites(drawing, links, places);
   let pieces: Piece[] = [];
-  for (let c = 0; c < holds.length; c++) readPieces(drawing, links, c, holds[c]!, pieces);
+  const firstSite = new Int32Array(chip.channels.length);
+  const { sites, portSite } = readSites(drawing, links, places, (channel, holds) => {
+    firstSite[channel] = holds[0]!.site;
+    readPieces(drawing, links, channel, holds, pieces);
+  });
   if (encounters.sameLine) pieces = dropDoubles(pieces, findings);
-  const cavity = cavities(drafts.length, pieces);
+  pieces.forEach((piece, i) => {
+    sites[piece.from]!.arms.push({ piece: i, end: 'from' });
+    sites[piece.to]!.arms.push({ piece: i, end: 'to' });
+  });
+  const cavity = cavities(sites.length, pieces);
   return {
-    sites: sitesWithArms(drafts, pieces),
+    sites,
     pieces,
     portSite,
     cavity,
-    channelCavity: Int32Array.from(holds, (list) => cavity[list[0]!.site]!),
+    channelCavity: firstSite.map((site) => cavity[site]!),
     findings,
   };
-}
-
-function sitesWithArms(drafts: readonly Omit<Site, 'arms'>[], pieces: readonly Piece[]): Site[] {
-  const arms: { piece: number; end: 'from' | 'to' }[][] = drafts.map(() => []);
-  pieces.forEach((piece, i) => {
-    arms[piece.from]!.push({ piece: i, end: 'from' });
-    arms[piece.to]!.push({ piece: i, end: 'to' });
-  });
-  return drafts.map((draft, i) => ({ ...draft, arms: arms[i]! }));
 }
 
 /** Number of the connected part of each site, in order of first sites. */
