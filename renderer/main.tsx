@@ -9,14 +9,18 @@ import { createClient } from '../main/contract/client.ts';
 import { type Bridge, desktopTransport } from '../main/contract/desktop.ts';
 import { loopbackTransport } from '../main/contract/loopback.ts';
 import { startTheme } from './look/theme.ts';
+import { patient } from './solving/patience.ts';
 import { createSolver, workerThread } from './solving/solver.ts';
 import { solvesEarly } from './state/early.ts';
+import { keptBy } from './state/kept-by.ts';
 
 /**
  * What takes longest begins first: the solving thread starts, and the host is asked what is open, while
  * the page itself is still being read.
  */
-const thread = workerThread();
+const thread = patient(workerThread());
+/** This build of the page: the name of the file bears a hash over everything the page brings in. */
+const build = new URL(import.meta.url).pathname.split('/').at(-1)!;
 const { channelwright } = window as unknown as { readonly channelwright?: Bridge };
 const client = createClient(
   channelwright ? desktopTransport(channelwright) : loopbackTransport({ origin: '', window: windowName() }),
@@ -33,11 +37,16 @@ const { solver, early } = solvesEarly(
 );
 // what this window had open before it was loaded anew, or what the program was started with
 const first = client.call('project.state', {}).then(({ state }) => {
-  if (state) early(state.chip);
+  if (!state) return state;
+  // what has been answered already is drawn first
+  if (keptBy(state.view) === build) thread.hold();
+  early(state.chip);
   return state;
 });
 startTheme();
-void import('./page/show.tsx').then(({ showPage }) => showPage(client, solver, first));
+void import('./page/show.tsx').then(({ showPage }) =>
+  showPage({ client, solver, first, build, shown: thread.release }),
+);
 
 /** This window's own name, which stays while it is loaded anew. */
 function windowName(): string {

@@ -1,3 +1,4 @@
+import { useEffect } from 'react';
 import { createRoot } from 'react-dom/client';
 import type { Client } from '../../main/contract/client.ts';
 import type { ProjectState } from '../../main/contract/contract.ts';
@@ -7,6 +8,7 @@ import { bringReading } from '../edits/reading.ts';
 import { chooseScheme } from '../look/theme.ts';
 import type { Solver } from '../solving/solver.ts';
 import { createDesk } from '../state/desk.ts';
+import { answersKept, keepAnswers } from '../state/kept-answers.ts';
 import { followHand } from '../state/live.ts';
 import { followOpenings } from '../state/openings.ts';
 import { createPreferences } from '../state/preferences.ts';
@@ -18,19 +20,40 @@ import { PageContext } from './context.tsx';
 const PATIENCE = 250;
 /** ms after which the start is over, and what is brought in later is: it is there when it is needed. */
 const STARTED = 3000;
+/** ms after which a page that paints nothing goes on all the same. */
+const UNSEEN = 1000;
 
-/** Joins everything to one page and puts it on the screen. `first` is what the window has open already. */
-export function showPage(client: Client, solver: Solver, first: Promise<ProjectState | null>): void {
-  const desk = createDesk(client, solver);
-  const bench = createWorkbench(desk);
+export interface Beginning {
+  readonly client: Client;
+  readonly solver: Solver;
+  /** What the window has open already. */
+  readonly first: Promise<ProjectState | null>;
+  /** Names this build of the page. */
+  readonly build: string;
+  /** Called when the page has been drawn. */
+  shown(): void;
+}
+
+/** Joins everything to one page and puts it on the screen. */
+export function showPage({ client, solver, first, build, shown }: Beginning): void {
   const preferences = createPreferences(client);
+  const units = () => preferences.store.get().units;
+  const desk = createDesk(client, solver, ({ view, chip }) =>
+    answersKept(view, { by: build, units: units(), chip }),
+  );
+  const bench = createWorkbench(desk);
   const commands = createCommands(desk, bench, () => preferences.store.get().keys);
   const page = { desk, bench, commands, preferences };
   const known = preferences
     .read()
     .then(() => chooseScheme(preferences.store.get().scheme))
     .catch(() => undefined);
-  const opened = followOpenings(client, desk, first);
+  const opened = followOpenings(
+    client,
+    desk,
+    known.then(() => first),
+  );
+  keepAnswers(desk, { by: build, units });
   client.on('project', (standing) => desk.stand(standing));
   client.on(
     'command',
@@ -47,7 +70,22 @@ export function showPage(client: Client, solver: Solver, first: Promise<ProjectS
     createRoot(document.getElementById('page')!).render(
       <PageContext value={page}>
         <App />
+        <Drawn then={shown} />
       </PageContext>,
     ),
   );
+}
+
+/** Calls once what stands beside it is on the screen, or would be if anybody saw it. */
+function Drawn({ then }: { then(): void }) {
+  useEffect(() => {
+    const unseen = setTimeout(then, UNSEEN);
+    requestAnimationFrame(() =>
+      requestAnimationFrame(() => {
+        clearTimeout(unseen);
+        then();
+      }),
+    );
+  }, [then]);
+  return null;
 }

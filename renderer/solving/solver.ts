@@ -57,6 +57,8 @@ export interface Solver {
   /** Null while nothing is dragged, and until the first answer to it. */
   readonly live: Store<Live | null>;
   load(chip: Chip, options: SolveOptions): void;
+  /** Answers known to hold for the chip just loaded: they stand until it is solved with all its junctions, or edited. */
+  presume(answers: readonly Answer[]): void;
   edit(edit: ChipEdit, chip: Chip): void;
   /** The chip as it would be, with the edit that would make it and what is being drawn; null when the hand has let go. */
   drag(would: { readonly edit: ChipEdit; readonly chip: Chip; readonly drawn?: string | null } | null): void;
@@ -103,6 +105,8 @@ export function createSolver(
     return last;
   };
   let newest = 0;
+  /** Whether `short` is what was presumed. */
+  let presumed = false;
 
   thread.listen((news) => {
     if (news.kind === 'tried') {
@@ -116,7 +120,7 @@ export function createSolver(
       return;
     }
     if (news.kind === 'short') {
-      if (asked.has(news.id) || news.id === newest) short.set(news.answers);
+      if (!presumed && (asked.has(news.id) || news.id === newest)) short.set(news.answers);
       painted(() => thread.post({ kind: 'rest' }));
       return;
     }
@@ -153,7 +157,8 @@ export function createSolver(
     if (!chip) return;
     for (const id of [...asked.keys()]) if (id <= news.id) asked.delete(id);
     const busy = news.id !== newest;
-    short.set(null);
+    presumed &&= news.outcome.ok && news.waiting > 0;
+    if (!presumed) short.set(null);
     solved.set({
       chip,
       ...told(news.outcome),
@@ -177,13 +182,22 @@ export function createSolver(
       asked.set(id, chip);
       dragged.clear();
       live.set(null);
+      presumed = false;
       short.set(null);
       solved.set({ ...NOTHING, busy: true });
       thread.post({ kind: 'load', id, chip, options });
     },
+    presume(answers) {
+      const { chip, busy, waiting } = solved.get();
+      // it came before
+      if (chip && !busy && waiting === 0) return;
+      presumed = true;
+      short.set(answers);
+    },
     edit(edit, chip) {
       const id = next();
       newest = id;
+      presumed = false;
       asked.set(id, chip);
       solved.patch({ busy: true });
       thread.post({ kind: 'edit', id, edit });

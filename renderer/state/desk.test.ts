@@ -147,3 +147,31 @@ test('the hand holds a tool; locked parts are out of its reach', async () => {
   ).toEqual([1_000_000, 5_000_000]);
   expect(desk.undoLabel()).toBe('draw a channel');
 });
+
+test('what else is remembered with a project outlasts new locks', async () => {
+  const { desk } = await openDesk();
+  desk.keepView({ answers: { by: 'index-1.js' } });
+  desk.lock(new Set(['channel:feed']));
+  expect(desk.keptView()).toEqual({ answers: { by: 'index-1.js' }, locked: ['channel:feed'] });
+});
+
+test('answers known to hold stand until the chip is solved', async () => {
+  const { desk, settle } = await openDesk();
+  settle();
+  const answers = [
+    { question: 'Q', standing: 'yes', says: ['as kept'], margin: null, culprit: null },
+  ] as const;
+  const works: (() => void)[] = [];
+  const solver = createSolver(heldThread(works));
+  const again = createDesk(desk.client, solver, () => answers);
+  const chip = desk.chip()!;
+  await again.open(
+    'Opening …',
+    async () => ({ chip, notes: [], seq: 1, view: {} }) as unknown as ProjectState,
+  );
+  expect(solver.short.get()).toEqual(answers);
+  expect(solver.solved.get().busy).toBe(true);
+  for (let work = works.shift(); work; work = works.shift()) work();
+  expect(solver.short.get()).toBeNull();
+  expect(solver.solved.get().result).not.toBeNull();
+});

@@ -1,5 +1,5 @@
 import type { Client } from '../../main/contract/client.ts';
-import type { Mode, Output, ProjectState, Standing } from '../../main/contract/contract.ts';
+import type { Input, Mode, Output, ProjectState, Standing } from '../../main/contract/contract.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { type ChipEdit, makeEdit } from '../../solver/chip/edit.ts';
 import { Problem } from '../../solver/problem/problem.ts';
@@ -7,6 +7,7 @@ import { toEdit } from '../edits/to-edit.ts';
 import { Spatial } from '../sheet/spatial.ts';
 import type { Solver } from '../solving/solver.ts';
 import type { Alteration } from '../tools/tool.ts';
+import type { Answer } from '../verdict/answer.ts';
 import { type Document, done, openDocument, redo, undo } from './document.ts';
 import { Keeper } from './keeper.ts';
 import { lockRefusal, readLocks, renamedLocks } from './locks.ts';
@@ -30,6 +31,8 @@ export interface Project {
 }
 
 export type About = Output<'about'>;
+/** JSON that is kept with a project, by what it is. */
+export type KeptView = Input<'view.keep'>['view'];
 
 /** Everything a window works with. */
 export interface Desk {
@@ -53,6 +56,10 @@ export interface Desk {
   say(text: string): void;
   /** Holds parts where they are, from now on and when the project is opened again. */
   lock(locked: ReadonlySet<string>): void;
+  /** What is remembered with the project and is not of the chip. */
+  keptView(): KeptView;
+  /** Remembers these beside what is remembered already. */
+  keepView(patch: KeptView): void;
   /** Opens what a request to the host returns. */
   open(label: string, request: () => Promise<ProjectState>): Promise<void>;
   close(): Promise<void>;
@@ -69,11 +76,17 @@ export interface Desk {
 const wordsOf = (error: unknown): string =>
   error instanceof Problem ? `${error.what} ${error.remedy}` : 'That did not work. Try it once more.';
 
-export function createDesk(client: Client, solver: Solver): Desk {
+/** @param presumed answers that are known to hold for a project as it is opened; null where there are none */
+export function createDesk(
+  client: Client,
+  solver: Solver,
+  presumed: (state: ProjectState) => readonly Answer[] | null = () => null,
+): Desk {
   const project = createStore<Project | null>(null);
   const view = createStore<View>(FIRST_VIEW);
   const opening = createStore('');
   let spatial: Spatial | null = null;
+  let keptView: KeptView = {};
   const say = (text: string): void => view.patch({ says: text });
 
   const keeper = new Keeper(client, {
@@ -101,6 +114,9 @@ export function createDesk(client: Client, solver: Solver): Desk {
     keeper.start(state.seq);
     // first, so that it is solved while the page is drawn
     solver.load(state.chip, {});
+    const early = presumed(state);
+    if (early) solver.presume(early);
+    keptView = state.view;
     project.set({
       document: openDocument(state.chip),
       name: state.name,
@@ -156,13 +172,18 @@ export function createDesk(client: Client, solver: Solver): Desk {
     }
   };
 
-  const lock = (locked: ReadonlySet<string>): void => {
-    view.patch({ locked });
+  const keepView = (patch: KeptView): void => {
+    keptView = { ...keptView, ...patch };
     if (project.get()?.mode === 'read-only') return;
     void keeper
       .settled()
-      .then(() => client.call('view.keep', { view: { locked: [...locked] } }))
+      .then(() => client.call('view.keep', { view: keptView }))
       .catch((error: unknown) => say(wordsOf(error)));
+  };
+
+  const lock = (locked: ReadonlySet<string>): void => {
+    view.patch({ locked });
+    keepView({ locked: [...locked] });
   };
 
   const attempt = (alteration: Alteration): string | null => {
@@ -197,6 +218,8 @@ export function createDesk(client: Client, solver: Solver): Desk {
     opening,
     say,
     lock,
+    keptView: () => keptView,
+    keepView,
     chip: () => project.get()?.document.chip ?? null,
     spatial() {
       const chip = project.get()!.document.chip;
