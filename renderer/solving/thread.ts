@@ -86,8 +86,13 @@ export function solvingThread(
     readonly edit: ChipEdit;
   } | null = null;
   let sent: Graph | null = null;
-  /** The newest answer where it was told in short and not yet asked for as a whole. */
-  let rest: { readonly id: number; readonly fresh: Fresh } | null = null;
+  /**
+   * The newest answer where it was told in short and not yet asked for as a whole; and whether its junctions wait
+   * for that, since their threads would take what it needs to be painted.
+   */
+  let rest: { readonly id: number; readonly fresh: Fresh; readonly handsOn: boolean } | null = null;
+  /** The newest edit came of no hand that waits for its junctions. */
+  let unheld = false;
   let look: PlanBox | null = null;
   /** What pictures are drawn of: the chip answered last. */
   let last: { readonly chip: Chip; readonly result: Result } | null = null;
@@ -205,7 +210,7 @@ export function solvingThread(
   const tellShort = (which: Chip, fresh: Fresh): void => {
     const { parts, waiting, began } = fresh;
     const problem = 'first' in parts ? null : parts;
-    rest = { id: newest, fresh };
+    rest = { id: newest, fresh, handsOn: unheld };
     const answers = verdicts({
       chip: which,
       result: 'first' in parts ? parts.first : null,
@@ -223,7 +228,8 @@ export function solvingThread(
       due = false;
       const fresh = answerTo(chip, false);
       tellShort(chip, fresh);
-      handOn(fresh.waiting);
+      if (!unheld) handOn(fresh.waiting);
+      unheld = false;
       if (!stuck && fresh.waiting.length === 0) exerciseLater();
     }
     if (!dragDue || !drag) return;
@@ -312,11 +318,15 @@ export function solvingThread(
       case 'speak':
         showIn(order.units);
         return;
-      case 'rest':
+      case 'rest': {
         // a newer answer may have taken its place, or have been asked for already
-        if (rest) tell({ kind: 'solved', id: rest.id, ...whole(rest.fresh) });
+        if (!rest) return;
+        const { id, fresh, handsOn } = rest;
         rest = null;
+        tell({ kind: 'solved', id, ...whole(fresh) });
+        if (handsOn && !drag) handOn(fresh.waiting);
         return;
+      }
       case 'kept':
         open -= 1;
         for (const { key, bytes } of order.cells) {
@@ -339,6 +349,7 @@ export function solvingThread(
         rest = null;
         last = null;
         drag = null;
+        unheld = false;
         return soon();
       case 'drag': {
         if (!chip) return;
@@ -360,6 +371,7 @@ export function solvingThread(
       }
       case 'edit':
         if (!chip) return;
+        unheld = !drag;
         // what the hand lets go of was read and cut already
         chip =
           drag?.base === chip && sameChanges(drag.edit, order.edit) ? drag.chip : applyEdit(chip, order.edit);
