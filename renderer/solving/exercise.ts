@@ -1,3 +1,5 @@
+import { PREVIEW_ACCURACY } from '../../solver/cell/cell.ts';
+import { warmUp } from '../../solver/cell/warm-up.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { CellMemory } from '../../solver/lump/cells.ts';
 import { emptyMemory } from '../../solver/memory.ts';
@@ -33,6 +35,8 @@ export function exercise(chip: Chip, options: SolveOptions, { store, known }: Ce
       const parts = solveInParts(variant, { ...options, haste: true }, memory);
       verdicts({ chip: variant, result: parts.first, trouble: '', waiting: memory.cells.waiting.length });
       parts.whole();
+      // what the hand will hold
+      warmUp(1, PREVIEW_ACCURACY);
     } catch {
       // such a chip has no answer, and needs none to be fast
       return false;

@@ -7,6 +7,7 @@ import { Problem } from '../../solver/problem/problem.ts';
 import { solve } from '../../solver/solve.ts';
 import { teeChip } from '../testing/chips.ts';
 import { verdicts } from '../verdict/verdicts.ts';
+import type { AtHand } from './at-hand.ts';
 import type { News } from './messages.ts';
 import { type CellHand, solvingThread } from './thread.ts';
 
@@ -14,7 +15,7 @@ import { type CellHand, solvingThread } from './thread.ts';
  * The thread with a hand that finds nothing, or what there is to be found; each step of both, and of the
  * clock, taken one by one.
  */
-function bench(finds = false) {
+function bench(finds = false, held?: AtHand) {
   const news: News[] = [];
   const works: (() => void)[] = [];
   const timers: (() => void)[] = [];
@@ -42,6 +43,7 @@ function bench(finds = false) {
     (work) => works.push(work),
     hand,
     (work) => timers.push(work),
+    held,
   );
   /** Works until there is nothing left to do; false where there is no end to it. */
   const settle = (): boolean => {
@@ -101,8 +103,11 @@ test('junctions handed out before the chip broke do not set it going for ever', 
   expect(of('solved').length).toBeLessThan(6);
 });
 
+/** All is left to the threads. */
+const NOTHING_AT_HAND: AtHand = { begin: () => undefined, solve: () => undefined };
+
 test('what is dragged is answered beside the chip, to preview accuracy, and none of it is kept', () => {
-  const { order, settle, of, handed } = bench();
+  const { order, settle, of, handed } = bench(false, NOTHING_AT_HAND);
   const chip = teeChip();
   order({ kind: 'load', id: 1, chip, options: {} });
   expect(settle()).toBe(true);
@@ -179,8 +184,30 @@ test('the five answers come first, and are those of the whole answer that follow
     expect(of('short').at(-1)!.answers[0]!.says).toEqual([expect.stringContaining(stopped.problem.what)]);
 });
 
-test('where the hand rests, what it holds is solved ahead; let go there, it is answered at once', () => {
+test('a junction that the hand holds is solved with its first answer, and by no thread', () => {
   const { order, settle, wait, of, handed } = bench(true);
+  const chip = teeChip();
+  order({ kind: 'load', id: 1, chip, options: FAIR });
+  expect(settle()).toBe(true);
+  const before = handed.length;
+  const moved = chip.channels[1]!;
+  const part = { ...moved, width: [90_000, 90_000] as const };
+  const changes = [{ kind: 'put' as const, list: 'channels' as const, id: moved.id, part }];
+  order({ kind: 'drag', id: 2, edit: { label: 'as it would be', changes } });
+  expect(settle()).toBe(true);
+  expect(of('dragged').length).toBe(1);
+  const { waiting, outcome } = of('dragged')[0]!;
+  expect(waiting).toBe(0);
+  expect(outcome.ok && outcome.result.junctions).toBe('solved');
+  expect(handed.slice(before).flatMap(({ cells }) => cells)).toEqual([]);
+  // as good as asked for it is only once the hand rests
+  expect(wait()).toBe(true);
+  expect(handed.at(-1)).toMatchObject({ ahead: true, accuracy: { flow: 0.02 } });
+  expect(handed.at(-1)!.cells.length).toBeGreaterThan(0);
+});
+
+test('where the hand rests, what it holds is solved ahead; let go there, it is answered at once', () => {
+  const { order, settle, wait, of, handed } = bench(true, NOTHING_AT_HAND);
   const chip = teeChip();
   order({ kind: 'load', id: 1, chip, options: FAIR });
   expect(settle()).toBe(true);

@@ -20,6 +20,7 @@ import {
 } from '../../solver/solve.ts';
 import { verdicts } from '../verdict/verdicts.ts';
 import { showIn } from '../words/figure.ts';
+import { atHand } from './at-hand.ts';
 import { exercise } from './exercise.ts';
 import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 import { shownGraph } from './shown-graph.ts';
@@ -34,7 +35,7 @@ export interface CellHand {
 /** An answer is given anew for a junction that came only after this many times as long as one takes. */
 const PATIENCE = 3;
 /** ms that the hand rests before what it holds is solved as it would be once let go. */
-const REST = 60;
+const REST = 25;
 /** ms without an order before solved junctions are handed over to be kept, and how many of them may wait. */
 const QUIET = 700;
 const MOST_UNKEPT = 64;
@@ -69,6 +70,7 @@ export function solvingThread(
   later: (work: () => void) => void,
   hand: CellHand | null = null,
   after: (work: () => void, ms: number) => void = (work, ms) => setTimeout(work, ms),
+  held = atHand(),
 ): (order: Order) => void {
   let memory = emptyMemory(memoryStore(MOST_KEPT));
   let chip: Chip | null = null;
@@ -235,6 +237,7 @@ export function solvingThread(
     if (!dragDue || !drag) return;
     dragDue = false;
     const { id } = drag;
+    if (hand) beforehand(drag.chip, (cells) => held.solve(cells, memory.cells));
     const fresh = answerTo(drag.chip, true);
     const { waiting } = fresh;
     tell({ kind: 'dragged', id, ...whole(fresh) });
@@ -242,11 +245,26 @@ export function solvingThread(
     if (hand && waiting.length === 0 && !stuck)
       after(() => solveAhead(id), Math.max(0, REST - performance.now() + ordered));
   };
+  /** Something done about a chip's junctions before it is answered; what is wrong with it the answer says. */
+  const beforehand = (which: Chip, work: (cells: readonly CellSpec[]) => void): void => {
+    try {
+      work(memory.cut(which).cells);
+    } catch {
+      // the answer meets it again
+    }
+  };
   /** What would be asked for if the hand let go here, where it still is. */
   const solveAhead = (id: number): void => {
-    if (!hand || drag?.id !== id || asked) return;
+    if (drag?.id === id && !asked) handOver(drag.chip, true);
+  };
+  /** What a chip that the hand holds, or held, still lacks to full accuracy. */
+  const handOver = (which: Chip, ahead: boolean): void => {
+    if (!hand) return;
     const accuracy = accuracyOf(options);
-    hand.solve(lackingCells(memory.cut(drag.chip).cells, accuracy, memory.cells), accuracy, true);
+    beforehand(which, (cells) => {
+      const lacking = lackingCells(cells, accuracy, memory.cells);
+      if (ahead || lacking.length > 0) hand.solve(seenFirst(lacking), accuracy, ahead);
+    });
   };
   /** Once, when the first chip is answered and nothing is asked: the next answers come faster. */
   const exerciseLater = (): void => {
@@ -356,6 +374,7 @@ export function solvingThread(
         if (order.edit) {
           try {
             const { id, edit } = order;
+            if (!drag) held.begin();
             drag = { id, chip: applyEdit(chip, edit), base: chip, edit };
             dragSoon();
           } catch {
@@ -373,8 +392,11 @@ export function solvingThread(
         if (!chip) return;
         unheld = !drag;
         // what the hand lets go of was read and cut already
-        chip =
-          drag?.base === chip && sameChanges(drag.edit, order.edit) ? drag.chip : applyEdit(chip, order.edit);
+        if (drag?.base === chip && sameChanges(drag.edit, order.edit)) {
+          chip = drag.chip;
+          // its junctions take longer than the answer without them
+          handOver(chip, false);
+        } else chip = applyEdit(chip, order.edit);
         newest = order.id;
         edited = true;
         return soon();

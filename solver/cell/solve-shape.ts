@@ -14,6 +14,8 @@ const TIGHT = 2e-9;
 /** Where only errors are judged by it: share of the flow's accuracy, and at most. */
 const LOOSE_SHARE = 0.02;
 const LOOSE_MOST = 1e-4;
+/** From this accuracy on a result is for the eye alone, while a shape is dragged: errors of the iteration may stay. */
+const ROUGH = 0.02;
 /** Coarseness of the mesh that judges at first, over that of the mesh judged. */
 const APART = 1.5;
 /** Errors go with these powers of the coarseness. */
@@ -103,7 +105,7 @@ export function* shapeSteps(shape: CellShape, accuracy: Accuracy, where: string)
     }
   }
   yield;
-  const kept = tighten(fine, TIGHT);
+  const kept = accuracy.flow >= ROUGH ? fine : tighten(fine, TIGHT);
   return {
     faces,
     asked: accuracy,
