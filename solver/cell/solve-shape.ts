@@ -1,5 +1,5 @@
 import { Problem } from '../problem/problem.ts';
-import type { Accuracy, ShapeSolution } from './cell.ts';
+import { type Accuracy, PREVIEW_ACCURACY, type ShapeSolution } from './cell.ts';
 import { relativeDifference } from './difference.ts';
 import { faceWidths } from './equivalent.ts';
 import { fieldsOf, type Level, type LevelSolution, levelOf, solveLevel, tighten } from './level.ts';
@@ -14,8 +14,6 @@ const TIGHT = 2e-9;
 /** Where only errors are judged by it: share of the flow's accuracy, and at most. */
 const LOOSE_SHARE = 0.02;
 const LOOSE_MOST = 1e-4;
-/** From this accuracy on a result is for the eye alone, while a shape is dragged: errors of the iteration may stay. */
-const ROUGH = 0.02;
 /** Coarseness of the mesh that judges at first, over that of the mesh judged. */
 const APART = 1.5;
 /** Errors go with these powers of the coarseness. */
@@ -105,7 +103,8 @@ export function* shapeSteps(shape: CellShape, accuracy: Accuracy, where: string)
     }
   }
   yield;
-  const kept = accuracy.flow >= ROUGH ? fine : tighten(fine, TIGHT);
+  // for the eye alone, errors of the iteration may stay
+  const kept = accuracy.flow >= PREVIEW_ACCURACY.flow ? fine : tighten(fine, TIGHT);
   return {
     faces,
     asked: accuracy,
