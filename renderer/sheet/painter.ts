@@ -35,8 +35,9 @@ export function createPainter(
       perfectDrawEnabled: false,
       sceneFunc: (context) => paints[name](context._context),
     });
-    layer.add(shape);
+    // in this order: a layer that is added is drawn at once, and the first frame draws all there is
     stage.add(layer);
+    layer.add(shape);
     layers.set(name, layer);
   }
   return {

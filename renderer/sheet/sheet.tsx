@@ -45,7 +45,8 @@ export function Sheet() {
     const refit = desk.view.subscribe(() => {
       if (!desk.view.get().camera) fitChip(desk);
     });
-    fitChip(desk);
+    // measured already, it would only be drawn twice
+    if (!desk.view.get().camera) fitChip(desk);
     return () => {
       watch.disconnect();
       refit();

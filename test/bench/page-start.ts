@@ -88,7 +88,7 @@ export async function starting(folder: string, description: string): Promise<Ben
   for (const name of files) {
     const text = readFileSync(join(DIST, name), 'utf8');
     for (const [, part] of text.matchAll(/(?:from|import)\s*\(?\s*["'`]\.\/([\w.-]+\.js)["'`]/g))
-      if (first.includes(name) || !/^(plots|from-outside)/.test(part!)) files.add(`assets/${part}`);
+      if (!/^(plots|from-outside)/.test(part!)) files.add(`assets/${part}`);
   }
   const bytes = [...files].reduce((sum, name) => sum + gzipSync(readFileSync(join(DIST, name))).length, 0);
   const row = (what: string, times: readonly number[], target?: number): BenchRow => ({
