@@ -8,7 +8,7 @@ import { type CellMemory, cellMemory } from './lump/cells.ts';
 import { lawMemory } from './lump/laws.ts';
 import type { Lumped, LumpMemory } from './lump/lump.ts';
 import { type PreparedNetwork, preparedFor, prepareNetwork } from './network/prepare.ts';
-import { type Gradient, gradients, type Target } from './network/sensitivity.ts';
+import { type Gradient, gradients, gradientsBy, type Target, weightsOf } from './network/sensitivity.ts';
 import { solveNetwork } from './network/solve-network.ts';
 import { solveNonlinear } from './network/solve-nonlinear.ts';
 import type { NetworkSolution, NetworkSpec } from './network/spec.ts';
@@ -41,6 +41,13 @@ interface Prepared {
   readonly network: PreparedNetwork;
   start: Float64Array | undefined;
 }
+/** Weights of targets in a network of these conductances: an edit of a drive leaves them as they are. */
+interface Weighed {
+  readonly network: PreparedNetwork;
+  readonly conductance: Float64Array;
+  readonly targets: readonly Target[];
+  readonly weights: readonly Float64Array[];
+}
 /**
  * Networks kept beside the last: one whose junctions are not solved yet has another topology, and while one
  * channel is edited the same few come by turns. Larger ones would take too much memory.
@@ -57,10 +64,16 @@ export function emptyMemory(store?: CellStore): Memory {
   };
   let prepared: Prepared | null = null;
   let others: readonly Prepared[] = [];
+  let weighed: Weighed | null = null;
   return {
     gradients({ spec, laws }, flow, targets) {
       if (!prepared || laws || flow.faults.length > 0) return null;
-      return gradients(spec, prepared.network, flow, targets);
+      const { network } = prepared;
+      if (weighed?.network !== network || !sameWeights(weighed, targets)) {
+        const conductance = network.conductance.slice();
+        weighed = { network, conductance, targets, weights: weightsOf(spec, network, targets) };
+      }
+      return gradientsBy(spec, network, flow, targets, weighed.weights);
     },
     slopes({ spec, laws }, flow, targets) {
       if (!prepared || flow.faults.length > 0) return null;
@@ -137,7 +150,15 @@ function sameTopology(a: NetworkSpec, b: NetworkSpec): boolean {
   );
 }
 
-function sameNumbers(a: Int32Array, b: Int32Array): boolean {
+function sameWeights({ network, conductance, targets }: Weighed, wanted: readonly Target[]): boolean {
+  return (
+    targets.length === wanted.length &&
+    targets.every(({ of, index }, t) => of === wanted[t].of && index === wanted[t].index) &&
+    sameNumbers(conductance, network.conductance)
+  );
+}
+
+function sameNumbers<T extends Int32Array | Float64Array>(a: T, b: T): boolean {
   if (a.length !== b.length) return false;
   for (let i = 0; i < a.length; i += 1) if (a[i] !== b[i]) return false;
   return true;

@@ -40,6 +40,18 @@ export function gradients(
   solution: NetworkSolution,
   targets: readonly Target[],
 ): Gradient[] {
+  return gradientsBy(spec, network, solution, targets, weightsOf(spec, network, targets));
+}
+
+/**
+ * The weights λ of each target, which depend on the network and not on what drives it by how much.
+ * @param network as left by the `solveNetwork` of the same spec
+ */
+export function weightsOf(
+  spec: NetworkSpec,
+  network: PreparedNetwork,
+  targets: readonly Target[],
+): Float64Array[] {
   const { edges, unknown, nodeOf, conductance, factor } = network;
   const { from, to, driveNode } = edges;
   const n = nodeOf.length;
@@ -71,20 +83,39 @@ export function gradients(
   });
   solve(factor, right, targets.length);
 
+  weights.forEach((weight, t) => {
+    for (let u = 0; u < n; u += 1) weight[nodeOf[u]] = right[t * n + u];
+  });
+  return weights;
+}
+
+/** As `gradients`, by weights that are known. */
+export function gradientsBy(
+  spec: NetworkSpec,
+  network: PreparedNetwork,
+  solution: NetworkSolution,
+  targets: readonly Target[],
+  weights: readonly Float64Array[],
+): Gradient[] {
+  const { from, to } = network.edges;
   return targets.map(({ of, index }, t) => {
     const weight = weights[t];
-    for (let u = 0; u < n; u += 1) weight[nodeOf[u]] = right[t * n + u];
-    const byResistance = new Float64Array(spec.resistance.length);
-    for (let e = 0; e < byResistance.length; e += 1) {
-      byResistance[e] = (weight[from[e]] - weight[to[e]]) * solution.ductFlow[e];
-    }
-    // most who ask need neither of these, and they cost more than the rest
+    // most who ask need one of these or none, and they cost more than the rest
+    const byResistance = once(() => {
+      const found = new Float64Array(spec.resistance.length);
+      for (let e = 0; e < found.length; e += 1) {
+        found[e] = (weight[from[e]] - weight[to[e]]) * solution.ductFlow[e];
+      }
+      if (of === 'duct') found[index] -= solution.ductFlow[index];
+      return found;
+    });
     const byBlock = once(() => blockGradient(spec, network, solution, weight));
     const byDrive = once(() => driveGradient(spec, network, targets[t], weight));
-    if (of === 'duct') byResistance[index] -= solution.ductFlow[index];
     return {
       weight,
-      byResistance,
+      get byResistance() {
+        return byResistance();
+      },
       get byBlock() {
         return byBlock();
       },

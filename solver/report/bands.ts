@@ -67,34 +67,47 @@ export function bandsOf(
     byResistance: new Float64Array(ducts.length),
     weight: new Float64Array(found[0].weight.length),
   };
-  found.forEach(({ byResistance, weight }, i) => {
-    if (drives[i].q > 0)
-      for (const [sum, own] of [
-        [whole.byResistance, byResistance],
-        [whole.weight, weight],
-      ] as const)
-        for (let k = 0; k < sum.length; k += 1) sum[k] += own[k] / entering;
+  found.forEach((gradient, i) => {
+    if (drives[i].q <= 0) return;
+    const { byResistance, weight } = gradient;
+    for (const [sum, own] of [
+      [whole.byResistance, byResistance],
+      [whole.weight, weight],
+    ] as const)
+      for (let k = 0; k < sum.length; k += 1) sum[k] += own[k] / entering;
   });
-  const powers = blockPowers(lumped, flow.pressure, new Float64Array(lumped.spec.blocks.length));
-  const mixed = new Float64Array(whole.weight.length);
-  const adjoint = new Float64Array(blocks.length);
   const own = ports.map((): NonNullable<PortResult['band']> | null => null);
-  /** Of a flow q, or of its share of all that enters. */
-  const bandOf = ({ byResistance, weight }: Gradient, q: number, less: 0 | 1): number => {
-    let off = 0;
+  const pairs = blockPairs(lumped);
+  const powers = blockPowers(pairs, flow.pressure);
+  /** Of a flow q, and of its share of all that enters; of a duct's own flow, which one that is. */
+  const bandOf = ({ weight }: Gradient, q: number, duct: number): { flow: number; share: number } => {
+    const { ductFrom, ductTo } = lumped.spec;
+    let [flowOff, shareOff] = [0, 0];
     for (let e = 0; e < ducts.length; e += 1) {
-      off += ducts[e] * Math.abs(byResistance[e] / q - less * whole.byResistance[e]);
+      const drop = weight[ductFrom[e]] - weight[ductTo[e]] - (e === duct ? 1 : 0);
+      const by = (drop * flow.ductFlow[e]) / q;
+      flowOff += ducts[e] * Math.abs(by);
+      shareOff += ducts[e] * Math.abs(by - whole.byResistance[e]);
     }
     // Where a cell's matrix A is off by no more than a share of its energy, |λ·δA·p| ≤ share √(λ·A·λ) √(p·A·p).
-    for (let node = 0; node < mixed.length; node += 1)
-      mixed[node] = weight[node] / q - less * whole.weight[node];
-    blockPowers(lumped, mixed, adjoint);
-    for (let b = 0; b < blocks.length; b += 1) off += blocks[b] * Math.sqrt(adjoint[b] * powers[b]);
-    return told(off);
+    const { start, a, b, conductance } = pairs;
+    for (let block = 0; block < blocks.length; block += 1) {
+      let [ofFlow, ofShare] = [0, 0];
+      for (let k = start[block]; k < start[block + 1]; k += 1) {
+        const drop = (weight[a[k]] - weight[b[k]]) / q;
+        const rest = drop - (whole.weight[a[k]] - whole.weight[b[k]]);
+        ofFlow += conductance[k] * drop * drop;
+        ofShare += conductance[k] * rest * rest;
+      }
+      const size = blocks[block] * Math.sqrt(powers[block]);
+      flowOff += size * Math.sqrt(Math.max(0, ofFlow));
+      shareOff += size * Math.sqrt(Math.max(0, ofShare));
+    }
+    return { flow: told(flowOff), share: told(shareOff) };
   };
   found.forEach((gradient, i) => {
     const { port, q } = drives[i];
-    own[port] = { flow: bandOf(gradient, q, 0), share: bandOf(gradient, q, 1) };
+    own[port] = bandOf(gradient, q, -1);
   });
   // What is not known of the viscosity shifts flows where pressures drive, pressures where flows do.
   const viscosity = fluid.uncertainty ?? 0;
@@ -106,10 +119,10 @@ export function bandsOf(
   const ofPieces = stretches.map((): NonNullable<PieceResult['band']> | null => null);
   streams.forEach(({ e, q }, i) => {
     const gradient = all[drives.length + i];
-    const own = bandOf(gradient, q, 0);
+    const { flow: own, share } = bandOf(gradient, q, e);
     ofPieces[e] = {
       flow: own + (driven ? 0 : viscosity),
-      share: bandOf(gradient, q, 1),
+      share,
       // What drives by pressure leaves the shear as it is, whatever the viscosity.
       shear: own + lumped.ducts[e].error + (driven ? viscosity : 0),
     };
@@ -146,22 +159,47 @@ function cellBands(
   });
 }
 
-/** x·A·x of every block, by the values of x at its nodes, into `into`. */
-function blockPowers({ spec }: Lumped, x: Float64Array, into: Float64Array): Float64Array {
-  for (let b = 0; b < into.length; b += 1) {
-    const { nodes, matrix } = spec.blocks[b];
+/** Every block as conductances between each two of its nodes a and b, one block after the other; blocks + 1 starts. */
+interface BlockPairs {
+  readonly start: Int32Array;
+  readonly a: Int32Array;
+  readonly b: Int32Array;
+  readonly conductance: Float64Array;
+}
+
+function blockPairs({ spec }: Lumped): BlockPairs {
+  const start = new Int32Array(spec.blocks.length + 1);
+  spec.blocks.forEach(({ nodes }, block) => {
+    start[block + 1] = start[block] + (nodes.length * (nodes.length - 1)) / 2;
+  });
+  const count = start[spec.blocks.length];
+  const [a, b, conductance] = [new Int32Array(count), new Int32Array(count), new Float64Array(count)];
+  let k = 0;
+  for (const { nodes, matrix } of spec.blocks) {
     const n = nodes.length;
-    let sum = 0;
-    for (let i = 0; i < n; i += 1) {
-      const at = x[nodes[i]];
-      for (let j = 0; j < i; j += 1) {
-        const drop = at - x[nodes[j]];
-        sum -= matrix[i * n + j] * drop * drop;
+    for (let i = 1; i < n; i += 1) {
+      for (let j = 0; j < i; j += 1, k += 1) {
+        a[k] = nodes[i];
+        b[k] = nodes[j];
+        conductance[k] = -matrix[i * n + j];
       }
     }
-    into[b] = Math.max(0, sum);
   }
-  return into;
+  return { start, a, b, conductance };
+}
+
+/** x·A·x of every block, by the values of x at its nodes. */
+function blockPowers({ start, a, b, conductance }: BlockPairs, x: Float64Array): Float64Array {
+  const powers = new Float64Array(start.length - 1);
+  for (let block = 0; block < powers.length; block += 1) {
+    let sum = 0;
+    for (let k = start[block]; k < start[block + 1]; k += 1) {
+      const drop = x[a[k]] - x[b[k]];
+      sum += conductance[k] * drop * drop;
+    }
+    powers[block] = Math.max(0, sum);
+  }
+  return powers;
 }
 
 /** Error of the power that drives the flow: of the pressure, where one flow is given. */
