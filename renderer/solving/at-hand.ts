@@ -9,7 +9,7 @@ const MOST_CELLS = 2;
 /** Area over the square of the narrowest face, in which the cost goes: a cross has about 6. */
 const MOST_AREA = 24;
 /** ms; what takes longer keeps the thread from what the hand does next. */
-const MOST_TIME = 40;
+const MOST_TIME = 80;
 
 /**
  * Junctions of what the hand holds, solved to preview accuracy right here, where that is sooner done than handed
