@@ -21,7 +21,7 @@ import { PortCard } from './port-card.tsx';
 import { SiteCard } from './site-card.tsx';
 
 const TITLES: Readonly<Record<Exclude<Panel, 'card'>, string>> = {
-  repeat: 'Array and offset',
+  repeat: 'Turn, array and offset',
   chip: 'Chip and fluid',
   plots: 'Plots',
   trials: 'Trials',

@@ -197,9 +197,9 @@ export function changeCommands(desk: Desk, bench: Workbench): Command[] {
     ),
     {
       id: 'repeat',
-      title: 'Array and offset …',
+      title: 'Turn by an angle, array and offset …',
       keys: ['a'],
-      help: 'Repeat the chosen parts along a pitch, or lay a channel beside another.',
+      help: 'Turn the chosen parts by any angle, repeat them along a pitch, or lay a channel beside another.',
       group: 'Change',
       why: chosen,
       run: () => desk.view.patch({ panel: 'repeat' }),

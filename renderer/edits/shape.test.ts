@@ -47,6 +47,22 @@ test('four quarter turns and two mirrors bring everything back to the nanometre'
   }
 });
 
+test('parts turn by any angle about their common middle, lengths kept, and the step is named', () => {
+  const chip = { ...line(0), channels: [...line(0).channels, ...line(20_000, 'b').channels] };
+  const refs = chip.channels.map(({ id }) => `channel:${id}`);
+  const shaping = turn(chip, refs, 30);
+  expect(shaping).toMatchObject({ label: 'turn two channels by 30°' });
+  const turned = shaped(chip, shaping);
+  // by hand: the lower channel runs from (0, 0) to (10, 0) µm, about (5, 10) µm; cos 30° and sin 30°
+  const [c, s] = [Math.sqrt(3) / 2, 1 / 2];
+  const by = (x: number, y: number) => [
+    Math.round(5000 + c * (x - 5000) - s * (y - 10_000)),
+    Math.round(10_000 + s * (x - 5000) + c * (y - 10_000)),
+  ];
+  expect(turned.channels[0]!.path).toEqual([by(0, 0), by(10_000, 0)]);
+  expect(turned.channels[1]!.path).toEqual([by(0, 20_000), by(10_000, 20_000)]);
+});
+
 test('parts are aligned on the edge of them all', () => {
   const chip = teeChip();
   const made = shaped(chip, align(chip, ['channel:up', 'channel:down'], 'top'));

@@ -19,10 +19,13 @@ export function turn(chip: Chip, refs: readonly Ref[], degrees: number): Shaping
   // a whole middle keeps quarter turns exact
   const middle = whole([(box.left + box.right) / 2, (box.bottom + box.top) / 2]);
   return {
-    label: `turn ${nameParts(parts, counted)}`,
+    label: `turn ${nameParts(parts, counted)} by ${inDegrees(degrees)}`,
     put: parts.map((part) => movedBy(part, (p) => turned(p, middle, degrees))),
   };
 }
+
+/** As it was typed, to six digits. */
+const inDegrees = (degrees: number): string => `${String(Number(degrees.toPrecision(6))).replace('-', '−')}°`;
 
 /** The selection mirrored about the upright or the level line through its middle. */
 export function mirror(chip: Chip, refs: readonly Ref[], line: 'upright' | 'level'): Shaping {

@@ -21,18 +21,25 @@ export function KeysPanel() {
   const own = useStore(preferences.store);
   const [asking, setAsking] = useState('');
   const [says, setSays] = useState('');
+  /** Another key, none, or the one it had at first. */
+  const give = (id: string, key: string | null): void => {
+    setAsking('');
+    const other = key ? commands.forKey(key) : null;
+    preferences.setKey(id, key);
+    setSays(
+      key === ''
+        ? `${commands.byId(id).title} has no key now; it is in the list of commands as ever.`
+        : other && other.id !== id
+          ? `${keyShown(key!)} no longer means ${other.title.toLowerCase()} first.`
+          : '',
+    );
+  };
   const take = (id: string, event: React.KeyboardEvent): void => {
     if (['Shift', 'Control', 'Alt', 'Meta', 'Tab'].includes(event.key)) return;
     event.preventDefault();
     event.stopPropagation();
-    setAsking('');
-    if (event.key === 'Escape') return;
-    const key = keyText(event);
-    const other = commands.forKey(key);
-    preferences.setKey(id, key);
-    setSays(
-      other && other.id !== id ? `${keyShown(key)} no longer means ${other.title.toLowerCase()} first.` : '',
-    );
+    if (event.key === 'Escape') setAsking('');
+    else give(id, keyText(event));
   };
   return (
     <>
@@ -52,12 +59,26 @@ export function KeysPanel() {
         ))}
       </section>
       <h3>Keys</h3>
-      <p className="soft small">Press a key’s button, then the new key; Escape leaves it as it was.</p>
+      <p className="soft small">
+        Press a key’s button, then the new key, or take the key away; Escape leaves it as it was.
+      </p>
       {says && <p role="status">{says}</p>}
       <ul className="keys">
         {commands.all.map((command) => (
           <li key={command.id}>
             <span>{command.title}</span>
+            {asking === command.id && (
+              <span>
+                <button type="button" className="quiet" onClick={() => give(command.id, '')}>
+                  No key
+                </button>
+                {own.keys[command.id] !== undefined && (
+                  <button type="button" className="quiet" onClick={() => give(command.id, null)}>
+                    As at first
+                  </button>
+                )}
+              </span>
+            )}
             <button
               type="button"
               aria-label={`Key of ${command.title}: ${commands.keyOf(command.id) || 'none'}`}

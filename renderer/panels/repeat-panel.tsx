@@ -1,16 +1,17 @@
 import { useState } from 'react';
 import { QuantityField } from '../card/quantity-field.tsx';
 import { boxOfParts, findParts } from '../edits/parts.ts';
-import { array, offset } from '../edits/shape.ts';
+import { array, offset, turn } from '../edits/shape.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 
-/** Copies along a pitch, and channels laid beside others. */
+/** Turning by an angle, copies along a pitch, and channels laid beside others. */
 export function RepeatPanel() {
   const { desk } = usePage();
   const chip = useStore(desk.project)!.document.chip;
   const selection = useStore(desk.view, (view) => view.selection);
   const box = boxOfParts(findParts(chip, selection));
+  const [angle, setAngle] = useState(45);
   const [count, setCount] = useState(4);
   const [right, setRight] = useState(0);
   const [up, setUp] = useState(box ? -Math.max(1_000_000, (box.top - box.bottom) * 1.5) : -2_000_000);
@@ -22,6 +23,27 @@ export function RepeatPanel() {
   const nm = (metres: number): number => Math.round(metres * 1e9);
   return (
     <>
+      <section aria-label="Turn" className="fields">
+        <h3>Turn about their middle</h3>
+        <QuantityField
+          label="Angle, to the left"
+          value={angle}
+          kind="angle"
+          unit="deg"
+          onAccept={(value) => {
+            if (Math.abs(value) > 360) return 'Takes an angle from −360° to 360°.';
+            setAngle(value);
+            return null;
+          }}
+        />
+        <button
+          type="button"
+          className="strong-button"
+          onClick={() => run(angle % 360 === 0 ? 'That angle turns nothing.' : turn(chip, selection, angle))}
+        >
+          Turn
+        </button>
+      </section>
       <section aria-label="Array" className="fields">
         <h3>Array along a pitch</h3>
         <QuantityField

@@ -15,7 +15,8 @@ export interface Likes {
 export interface Preferences {
   readonly store: Store<Likes>;
   read(): Promise<void>;
-  setKey(command: string, key: string): void;
+  /** '' takes the key away, null gives back the one it had at first. */
+  setKey(command: string, key: string | null): void;
   clearKeys(): void;
   setUnit(kind: Kind, unit: string | null): void;
 }
@@ -43,7 +44,8 @@ export function createPreferences(client: Client): Preferences {
       showIn(store.get().units);
     },
     setKey(command, key) {
-      const keys = { ...store.get().keys, [command]: key };
+      const { [command]: _, ...others } = store.get().keys;
+      const keys = key === null ? others : { ...others, [command]: key };
       store.patch({ keys });
       write({ keys });
     },

@@ -246,7 +246,7 @@ test('nonsense in the fields of every panel: repeating, plots, masks, bringing i
       expect(wrong, name).toEqual([]);
       await page.keyboard.press('Escape');
     }
-    expect(seen).toEqual({ repeat: 4, plots: 2, 'hand over': 7, 'bring in': 4 });
+    expect(seen).toEqual({ repeat: 5, plots: 2, 'hand over': 7, 'bring in': 4 });
     // measurements are one table: what is wrong with it stands beside it, and the table stays as it was typed
     await command('as built');
     const table = page.getByLabel('Table, typed or pasted');
