@@ -1,4 +1,4 @@
-import { useMemo, useState } from 'react';
+import { useDeferredValue, useMemo, useState } from 'react';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import { TABS, type Tab } from '../state/view.ts';
@@ -11,8 +11,15 @@ import { countOf, tableOf } from './tables.ts';
 /** The tables under the sheet: everything on the sheet, operable without seeing it. */
 export function Ledger() {
   const { desk } = usePage();
-  const chip = useStore(desk.project)!.document.chip;
-  const { result, graph } = useStore(desk.solver.solved);
+  const open = useStore(desk.project)!.document.chip;
+  const solved = useStore(desk.solver.solved);
+  // an edit is answered before its row is set anew
+  const { chip, result, graph } = useDeferredValue(
+    useMemo(
+      () => ({ chip: open, result: solved.result, graph: solved.graph }),
+      [open, solved.result, solved.graph],
+    ),
+  );
   const tab = useStore(desk.view, (view) => view.tab);
   const [words, setWords] = useState('');
   const [orders, setOrders] = useState<Partial<Record<Tab, Order | null>>>({});

@@ -11,22 +11,22 @@ export function VerdictBar() {
   const { desk, commands, preferences } = usePage();
   const project = useStore(desk.project)!;
   const solved = useAnswer(desk);
-  const { chip } = project.document;
   const { units } = useStore(preferences.store);
   useEffect(() => desk.solver.speak(units), [desk, units]);
+  const chip = solved.chip ?? project.document.chip;
   const busy = solved.busy || solved.waiting > 0;
   // a newer result's five answers are here before it
   const short = useStore(desk.solver.short);
   const own = useMemo(
     () =>
       verdicts({
-        chip: solved.chip ?? chip,
+        chip,
         result: solved.result,
         trouble: solved.problem?.what ?? '',
         waiting: solved.waiting,
         preview: solved.preview,
       }),
-    [chip, solved.chip, solved.result, solved.problem, solved.waiting, solved.preview],
+    [chip, solved.result, solved.problem, solved.waiting, solved.preview],
   );
   const answers = short ?? own;
   return (
