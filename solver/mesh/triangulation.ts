@@ -1,6 +1,6 @@
-import Constrainautor from '@kninnug/constrainautor';
 import Delaunator from 'delaunator';
 import type { Boundary } from './boundary.ts';
+import { BoundedConstraints } from './bounded-constraints.ts';
 
 /**
  * Triangles by half-edges: half-edge e = 3t + i of triangle t starts at vertex[e] and runs
@@ -100,7 +100,7 @@ function triangulateTurned(boundary: Boundary, cos: number, sin: number): Triang
   const edges: [number, number][] = [];
   for (let i = 0; i < count; i += 1) edges.push([i, next[i]]);
   try {
-    new Constrainautor(delaunay, edges);
+    new BoundedConstraints(delaunay).constrainAll(edges);
   } catch {
     return null;
   }

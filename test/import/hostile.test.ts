@@ -5,6 +5,11 @@ import { bytesOf, USUAL } from './read.ts';
 
 /** Files that are broken, or made to break the program: a named refusal, within bounds, and the process lives. */
 
+const NEARLY =
+  '<svg xmlns="http://www.w3.org/2000/svg"><style>.a{fill:none;stroke:#00</style><g id="flow" transform="translate(10 20)">' +
+  '<path d="M100 100h800v40h-800z m0 100c50 20 80 20 100 0v40z"/>' +
+  '<polyline class="a" stroke-width="20" points="0,0 500,0 500,300"/></g><circle cx="100" cy="120" r="30"/></svg>';
+
 test.each(Object.keys(SEEDS))(
   '1,667 mutated %s files: a chip, or a problem that says what is wrong',
   (kind) => {
@@ -31,6 +36,15 @@ test.each(Object.keys(BOMBS))(
   },
   60_000,
 );
+
+test('a filled line whose points are nearly on its edges: the triangulation ends, and it is a chip', async () => {
+  // left to itself the triangulation flips the same two diagonals for ever
+  const thread = startImport(
+    { bytes: bytesOf(NEARLY), file: 'nearly', settings: { ...USUAL, unit: 1e-6 } },
+    () => undefined,
+  );
+  expect((await thread.ended).kind).toBe('made');
+}, 60_000);
 
 test('an import that runs can be ended, and the next one works', async () => {
   const line = '0\nLINE\n8\nA\n10\n0\n20\n0\n11\n5\n21\n5\n';

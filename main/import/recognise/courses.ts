@@ -137,7 +137,7 @@ class Builder {
   #y = 0;
 
   constructor(width: number) {
-    this.#width = Math.round(width);
+    this.#width = Math.max(1, Math.round(width));
   }
 
   begin(x: number, y: number): void {
