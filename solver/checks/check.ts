@@ -1,5 +1,7 @@
+import type { Chip } from '../chip/chip.ts';
+import type { Graph } from '../chip/graph.ts';
 import type { Finding } from '../problem/finding.ts';
-import type { Evidence } from './evidence.ts';
+import type { Drawn, Evidence } from './evidence.ts';
 import { byGravity, Gathered } from './gather.ts';
 import { checkHoles } from './holes.ts';
 import { checkKeepOuts } from './keep-outs.ts';
@@ -20,8 +22,17 @@ import { checkWidths } from './widths.ts';
 export function checkFindings(evidence: Evidence): Finding[] {
   const { chip, graph } = evidence;
   const rules = chip.process ? rulesOf(chip.process) : null;
-  const drawn = { chip, graph, rules };
   const found = new Gathered();
+  if (!isClean(chip, graph)) {
+    checkDrawn({ chip, graph, rules }, found);
+    if (found.list().length === 0) keepClean(chip, graph);
+  }
+  checkTrust(evidence, rules, found);
+  checkSettling(evidence, rules, found);
+  return byGravity(found.list());
+}
+
+function checkDrawn(drawn: Drawn, found: Gathered): void {
   checkOutline(drawn, found);
   checkKeepOuts(drawn, found);
   checkWidths(drawn, found);
@@ -30,7 +41,26 @@ export function checkFindings(evidence: Evidence): Finding[] {
   checkLayers(drawn, found);
   checkHoles(drawn, found);
   checkShapes(drawn, found);
-  checkTrust(evidence, rules, found);
-  checkSettling(evidence, rules, found);
-  return byGravity(found.list());
+}
+
+/**
+ * Drawings in which nothing was found, by the graph that was read from them, with what else they were checked by:
+ * an edit of a drive leaves the graph as it is.
+ */
+const clean = new WeakMap<Graph, readonly unknown[]>();
+const alsoBy = ({ process, keepOuts, ports }: Chip): readonly unknown[] => [
+  process,
+  keepOuts,
+  ...ports.map(({ tubing }) => tubing.map(({ bore, length }) => `${bore} ${length}`).join()),
+];
+
+const keepClean = (chip: Chip, graph: Graph): void => {
+  clean.set(graph, alsoBy(chip));
+};
+
+function isClean(chip: Chip, graph: Graph): boolean {
+  const by = clean.get(graph);
+  if (!by) return false;
+  const now = alsoBy(chip);
+  return now.length === by.length && now.every((value, i) => value === by[i]);
 }
