@@ -25,8 +25,14 @@ const HELD = {
   sign: 'at nought',
 } as const;
 
-const off = (now: number | null | undefined, before: number | null | undefined): number | null =>
-  now == null || before == null || before === 0 ? null : now / before - 1;
+/** Relative changes smaller than this are rounding: the solve resolves no more. */
+const RESOLVED = 1e-9;
+
+function off(now: number | null | undefined, before: number | null | undefined): number | null {
+  if (now == null || before == null || before === 0) return null;
+  const change = now / before - 1;
+  return Math.abs(change) < RESOLVED ? 0 : change;
+}
 
 const likely = (making: Making | undefined): number | null => making?.likely ?? null;
 

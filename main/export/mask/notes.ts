@@ -29,8 +29,10 @@ export function commonNotes(
   ];
   if (lane > 0) notes.push(`The dicing lane is ${um(lane)} wide, outside the outline.`);
   if (wafer) {
+    const count = wafer.centres.length;
+    const chips = count === 1 ? '1 chip' : `${count} chips`;
     notes.push(
-      `${wafer.centres.length} chips on a wafer of ${mm(wafer.diameter)}, edge ${mm(wafer.edge)} kept free, pitch ${mm(wafer.pitch[0])} × ${mm(wafer.pitch[1])}.`,
+      `${chips} on a wafer of ${mm(wafer.diameter)}, edge ${mm(wafer.edge)} kept free, pitch ${mm(wafer.pitch[0])} × ${mm(wafer.pitch[1])}.`,
     );
   }
   if (marks && drawings > 1) {
