@@ -28,6 +28,13 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
   const solved = result?.channels.find((found) => found.id === channel.id);
   const put = (change: Partial<Channel>, label: string): string | null =>
     desk.attempt({ label, put: [{ kind: 'channel', value: { ...channel, ...change } }] });
+  const asItsLayer = (): string | null => {
+    const { depth: _, ...value } = channel;
+    return desk.attempt({
+      label: `make ${channel.id} as deep as its layer`,
+      put: [{ kind: 'channel', value }],
+    });
+  };
   const nm = (metres: number): number => Math.round(metres * 1e9);
   const ramp = useMemo(() => shown('wall shear', chip, result), [chip, result]);
   const tapered = channel.width[0] !== channel.width[1];
@@ -82,6 +89,21 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
               put({ width: [channel.width[0], nm(value)] }, `set the width of ${channel.id}`)
             }
           />
+        )}
+        {layer && (
+          <QuantityField
+            label="Depth"
+            value={(channel.depth ?? layer.depth) / 1e9}
+            kind="length"
+            unit="um"
+            onAccept={(value) => put({ depth: nm(value) }, `set the depth of ${channel.id}`)}
+            {...(channel.depth !== undefined && { onEmpty: asItsLayer })}
+          />
+        )}
+        {channel.depth !== undefined && (
+          <button type="button" className="quiet" onClick={asItsLayer}>
+            As deep as its layer
+          </button>
         )}
         <QuantityField
           label="Length"

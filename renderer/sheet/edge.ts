@@ -71,7 +71,7 @@ export function drawEdge(
 }
 
 /** px that the graduated edge takes outside of the chip: its ticks, and where they are numbered. */
-const TICKS = 10;
+export const TICKS = 10;
 const NUMBERED = 26;
 
 /** The places of the edge itself, so that no words run across it. */

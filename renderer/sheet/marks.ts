@@ -1,6 +1,7 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { FIGURE_FACE, type Palette, SIZES, TEXT_FACE } from '../look/tokens.ts';
 import { type Camera, type Size, toPlan, toScreen } from './camera.ts';
+import { TICKS } from './edge.ts';
 import type { Room } from './room.ts';
 import type { Spatial } from './spatial.ts';
 import type { PlaceWords, PortWords } from './words.ts';
@@ -48,18 +49,21 @@ export function drawPorts(
 }
 
 const LINE = 14;
+/** px that words may come closer to their port than they stand where there is room. */
+const CLOSER = 5;
 
-/** `around` has the name above and the figure below. */
-type Side = PortWords['side'] | 'around';
+/** `around` has the name above and the figure below; `beyond` has below what has room there, the rest beneath the edge. */
+type Side = PortWords['side'] | 'around' | 'beyond';
 
 /** Where else words may go when their own side is taken. */
 const OTHERS: Readonly<Record<Side, readonly Side[]>> = {
   around: [],
+  beyond: [],
   // ports that feed to the right mostly stand at the left edge, where its figures are
-  left: ['around', 'above', 'below', 'left', 'right'],
-  right: ['right', 'above', 'below', 'left'],
-  above: ['above', 'right', 'left', 'below'],
-  below: ['below', 'right', 'left', 'above'],
+  left: ['around', 'above', 'below', 'beyond', 'left', 'right'],
+  right: ['right', 'above', 'below', 'beyond', 'left'],
+  above: ['above', 'right', 'left', 'below', 'beyond'],
+  below: ['below', 'right', 'left', 'beyond', 'above'],
 };
 
 /** How many runs of channels lie under a rectangle of the screen. */
@@ -84,6 +88,7 @@ export function drawPortWords(
   spatial: Spatial,
 ): void {
   const covered = coverage(camera, size, spatial);
+  const [, bottom] = toScreen(camera, size, [0, 0]);
   ctx.textBaseline = 'middle';
   for (const { port, name, figure, side, missed } of words) {
     const [x, y] = toScreen(camera, size, port.at);
@@ -94,23 +99,35 @@ export function drawPortWords(
     const nameWide = ctx.measureText(short).width;
     ctx.font = `${missed ? 650 : 400} ${SIZES.label}px ${FIGURE_FACE}`;
     const wide = Math.max(nameWide, ctx.measureText(figure).width);
+    /** Top of the upper line where lines that would cross the lower edge go beneath its ticks. */
+    const beneath = bottom + TICKS + 1;
+    const beyond = (): readonly [number, number] => {
+      const first = y + away;
+      const close = bottom - 1 - 2 * LINE;
+      if (close >= first - CLOSER) return [close, close + LINE];
+      if (first + LINE > bottom - 1) return [beneath, beneath + LINE];
+      return [first, first + 2 * LINE > bottom - 1 ? beneath : first + LINE];
+    };
     /** Left, tops of the two lines. */
     const box = (where: Side): readonly [number, number, number] =>
-      where === 'right'
-        ? [x + away, y - LINE, y]
-        : where === 'left'
-          ? [x - away - wide, y - LINE, y]
-          : where === 'around'
-            ? [x - wide / 2, y - away - LINE, y + away]
-            : where === 'above'
-              ? [x - wide / 2, y - away - 2 * LINE, y - away - LINE]
-              : [x - wide / 2, y + away, y + away + LINE];
+      where === 'beyond'
+        ? [x - wide / 2, ...beyond()]
+        : where === 'right'
+          ? [x + away, y - LINE, y]
+          : where === 'left'
+            ? [x - away - wide, y - LINE, y]
+            : where === 'around'
+              ? [x - wide / 2, y - away - LINE, y + away]
+              : where === 'above'
+                ? [x - wide / 2, y - away - 2 * LINE, y - away - LINE]
+                : [x - wide / 2, y + away, y + away + LINE];
     const fits = (where: Side): boolean => {
       const [left, first, second] = box(where);
       const under = covered(left, first, wide, second + LINE - first);
       return (
         left > 2 &&
         left + wide < size.width - 2 &&
+        (where !== 'beyond' || y < bottom) &&
         (where === side || under <= (where === 'around' ? 1 : 0)) &&
         room.free(left - 2, first, wide + 4, LINE) &&
         room.free(left - 2, second, wide + 4, LINE)

@@ -151,7 +151,6 @@ test('every surface that a command opens: colours, motion, enlarged, and the way
     // as many surfaces as there are panels and dialogs: one that is new is found by its command
     expect([...seen].sort()).toEqual([
       'About',
-      'Array and offset',
       'As built',
       'Bring in a drawing',
       'Chip and fluid',
@@ -160,6 +159,7 @@ test('every surface that a command opens: colours, motion, enlarged, and the way
       'Keys and units',
       'Plots',
       'Trials',
+      'Turn, array and offset',
       'What was done',
       'Where the chip description goes',
       'Where the project is kept',
