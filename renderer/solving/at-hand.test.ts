@@ -60,13 +60,16 @@ test('few small junctions are solved at once; a wide chamber is left to the thre
   expect(left(wideChamber(), atHand())).toBeGreaterThan(0);
 });
 
-test('what turned out slow is left to the threads until the hand takes hold anew', () => {
+test('what turned out slow is left to the threads for a while, or until the hand takes hold anew', () => {
   let now = 0;
   const held = atHand(() => {
     now += 100;
     return now;
   });
   held.begin();
+  expect(left(teeChip(), held)).toBe(0);
+  for (let i = 0; i < 8; i += 1) expect(left(teeChip(), held)).toBeGreaterThan(0);
+  // it may have been slow that once
   expect(left(teeChip(), held)).toBe(0);
   expect(left(teeChip(), held)).toBeGreaterThan(0);
   held.begin();

@@ -10,10 +10,13 @@ const MOST_CELLS = 2;
 const MOST_AREA = 24;
 /** ms; what takes longer keeps the thread from what the hand does next. */
 const MOST_TIME = 80;
+/** How often it is then left to the threads before it is tried again: the first time code has to be compiled. */
+const LEFT = 8;
 
 /**
  * Junctions of what the hand holds, solved to preview accuracy right here, where that is sooner done than handed
- * to a thread and answered twice. What turns out slow is left to the threads until the hand takes hold anew.
+ * to a thread and answered twice. What turns out slow is left to the threads for a while, or until the hand takes hold
+ * anew.
  */
 export interface AtHand {
   /** The hand takes hold of something. */
@@ -23,18 +26,22 @@ export interface AtHand {
 }
 
 export function atHand(clock: () => number = () => performance.now()): AtHand {
-  let slow = false;
+  let left = 0;
   return {
     begin() {
-      slow = false;
+      left = 0;
     },
     solve(cells, memory) {
-      if (slow) return;
       const lacking = lackingCells(cells, PREVIEW_ACCURACY, memory);
       if (lacking.length > MOST_CELLS || lacking.some(({ shape }) => relativeArea(shape) > MOST_AREA)) return;
+      if (lacking.length === 0) return;
+      if (left > 0) {
+        left -= 1;
+        return;
+      }
       const began = clock();
       for (const cell of lacking) solveWaiting(cell, PREVIEW_ACCURACY, memory);
-      slow = clock() - began > MOST_TIME;
+      if (clock() - began > MOST_TIME) left = LEFT;
     },
   };
 }

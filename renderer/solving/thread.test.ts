@@ -68,7 +68,11 @@ function bench(finds = false, held?: AtHand) {
     for (const timer of timers.splice(0)) timer();
     return settle();
   };
-  return { order, settle, wait, of, handed, step: () => works.shift()?.() };
+  /** Time passes, and nothing else happens. */
+  const elapse = (): void => {
+    for (const timer of timers.splice(0)) timer();
+  };
+  return { order, settle, wait, elapse, of, handed, step: () => works.shift()?.() };
 }
 
 const closedWell = {
@@ -204,6 +208,43 @@ test('a junction that the hand holds is solved with its first answer, and by no 
   expect(wait()).toBe(true);
   expect(handed.at(-1)).toMatchObject({ ahead: true, accuracy: { flow: 0.02 } });
   expect(handed.at(-1)!.cells.length).toBeGreaterThan(0);
+});
+
+test('what the hand lets go of is answered once, with its junctions; without them only where these take too long', () => {
+  const chip = teeChip();
+  const moved = chip.channels[1]!;
+  const part = { ...moved, width: [90_000, 90_000] as const };
+  const changes = [{ kind: 'put' as const, list: 'channels' as const, id: moved.id, part }];
+  /** Dragged, and let go of before the hand has rested. */
+  const letGo = ({ order, settle }: ReturnType<typeof bench>): void => {
+    order({ kind: 'load', id: 1, chip, options: FAIR });
+    expect(settle()).toBe(true);
+    order({ kind: 'drag', id: 2, edit: { label: 'as it would be', changes } });
+    expect(settle()).toBe(true);
+    order({ kind: 'edit', id: 3, edit: { label: 'widen the outlet', changes } });
+    order({ kind: 'drag', id: 4, edit: null });
+  };
+  const found = bench(true);
+  letGo(found);
+  expect(found.settle()).toBe(true);
+  const answers = found.of('solved').filter(({ id }) => id === 3);
+  expect(answers.map(({ waiting }) => waiting)).toEqual([0]);
+  expect(found.handed.some(({ ahead }) => ahead)).toBe(false);
+  // threads that give nothing at all
+  const silent = bench(true);
+  letGo(silent);
+  const none = (): boolean => silent.of('short').every(({ id }) => id === 1);
+  expect(none()).toBe(true);
+  // another edit is answered at once, whatever the one before it still waits for
+  const back = [{ kind: 'put' as const, list: 'channels' as const, id: moved.id, part: moved }];
+  silent.order({ kind: 'edit', id: 5, edit: { label: 'as it was', changes: back } });
+  silent.step();
+  expect(silent.of('short').at(-1)!.id).toBe(5);
+  const late = bench(true);
+  letGo(late);
+  late.elapse();
+  late.step();
+  expect(late.of('short').at(-1)!.id).toBe(3);
 });
 
 test('where the hand rests, what it holds is solved ahead; let go there, it is answered at once', () => {

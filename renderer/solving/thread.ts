@@ -36,6 +36,9 @@ export interface CellHand {
 const PATIENCE = 3;
 /** ms that the hand rests before what it holds is solved as it would be once let go. */
 const REST = 25;
+/** ms that what was let go of waits for its junctions, and how few these must be; its preview is shown meanwhile. */
+const AWAITED = 250;
+const MOST_AWAITED = 2;
 /** ms without an order before solved junctions are handed over to be kept, and how many of them may wait. */
 const QUIET = 700;
 const MOST_UNKEPT = 64;
@@ -95,6 +98,8 @@ export function solvingThread(
   let rest: { readonly id: number; readonly fresh: Fresh; readonly handsOn: boolean } | null = null;
   /** The newest edit came of no hand that waits for its junctions. */
   let unheld = false;
+  /** The edit that is answered once its junctions are there; 0 where none is. */
+  let awaiting = 0;
   let look: PlanBox | null = null;
   /** What pictures are drawn of: the chip answered last. */
   let last: { readonly chip: Chip; readonly result: Result } | null = null;
@@ -226,7 +231,7 @@ export function solvingThread(
   const answer = (): void => {
     asked = false;
     if (!chip) return;
-    if (due) {
+    if (due && awaiting === 0) {
       due = false;
       const fresh = answerTo(chip, false);
       tellShort(chip, fresh);
@@ -258,13 +263,23 @@ export function solvingThread(
     if (drag?.id === id && !asked) handOver(drag.chip, true);
   };
   /** What a chip that the hand holds, or held, still lacks to full accuracy. */
-  const handOver = (which: Chip, ahead: boolean): void => {
-    if (!hand) return;
+  const handOver = (which: Chip, ahead: boolean): number => {
+    if (!hand) return 0;
     const accuracy = accuracyOf(options);
+    let count = 0;
     beforehand(which, (cells) => {
       const lacking = lackingCells(cells, accuracy, memory.cells);
-      if (ahead || lacking.length > 0) hand.solve(seenFirst(lacking), accuracy, ahead);
+      count = lacking.length;
+      if (ahead || count > 0) hand.solve(seenFirst(lacking), accuracy, ahead);
     });
+    return count;
+  };
+  /** Answers an edit when its junctions have come, or have taken too long. */
+  const soonWithJunctions = (id: number): void => {
+    awaiting = id;
+    after(() => {
+      if (awaiting === id) soon();
+    }, AWAITED);
   };
   /** Once, when the first chip is answered and nothing is asked: the next answers come faster. */
   const exerciseLater = (): void => {
@@ -290,6 +305,7 @@ export function solvingThread(
   };
   const soon = (): void => {
     due = true;
+    awaiting = 0;
     work();
   };
   const dragSoon = (): void => {
@@ -305,6 +321,7 @@ export function solvingThread(
     if (stuck) return;
     // what is held is shown to preview accuracy, and that it has been
     if (drag && accuracy !== PREVIEW_ACCURACY) return;
+    if (awaiting > 0 && left > 0) return;
     // answers to a large chip are not given for every single junction, but always for the last
     if (left > 0 && performance.now() - ready < PATIENCE * took) return;
     if (drag) dragSoon();
@@ -385,21 +402,24 @@ export function solvingThread(
         if (!drag) return;
         drag = null;
         // what was answered last may be what was held, or without junctions that came meanwhile
-        if (!settled || memory.cells.waiting.length > 0) soon();
+        if (awaiting === 0 && (!settled || memory.cells.waiting.length > 0)) soon();
         return;
       }
-      case 'edit':
+      case 'edit': {
         if (!chip) return;
         unheld = !drag;
         // what the hand lets go of was read and cut already
-        if (drag?.base === chip && sameChanges(drag.edit, order.edit)) {
-          chip = drag.chip;
-          // its junctions take longer than the answer without them
-          handOver(chip, false);
-        } else chip = applyEdit(chip, order.edit);
         newest = order.id;
         edited = true;
-        return soon();
+        if (drag?.base !== chip || !sameChanges(drag.edit, order.edit)) {
+          chip = applyEdit(chip, order.edit);
+          return soon();
+        }
+        chip = drag.chip;
+        // its junctions take longer than an answer without them, which would be worse than the preview on screen
+        const lacking = handOver(chip, false);
+        return lacking > 0 && lacking <= MOST_AWAITED ? soonWithJunctions(order.id) : soon();
+      }
       case 'try': {
         if (!chip) return;
         let outcome: Outcome;

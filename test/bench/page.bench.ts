@@ -189,6 +189,8 @@ async function dragging(folder: string): Promise<BenchRow[]> {
   const { page } = sitting;
   try {
     await answered(page);
+    // somebody looks at the chip before they take hold of it
+    await page.waitForTimeout(5000);
     const box = (await page.locator('.sheet-surface').first().boundingBox())!;
     // the junction lies in the middle of the chip, and that 18 px above the middle of the sheet
     const at = { x: box.x + box.width / 2, y: box.y + box.height / 2 - 18 };
