@@ -1,5 +1,5 @@
 import { Problem } from '../problem/problem.ts';
-import { type Accuracy, PREVIEW_ACCURACY, type ShapeSolution } from './cell.ts';
+import type { Accuracy, ShapeSolution } from './cell.ts';
 import { relativeDifference } from './difference.ts';
 import { faceWidths } from './equivalent.ts';
 import { fieldsOf, type Level, type LevelSolution, levelOf, solveLevel, tighten } from './level.ts';
@@ -103,8 +103,7 @@ export function* shapeSteps(shape: CellShape, accuracy: Accuracy, where: string)
     }
   }
   yield;
-  // for the eye alone, errors of the iteration may stay
-  const kept = accuracy.flow >= PREVIEW_ACCURACY.flow ? fine : tighten(fine, TIGHT);
+  const kept = tighten(fine, TIGHT);
   return {
     faces,
     asked: accuracy,
