@@ -471,6 +471,22 @@ test('a curved channel of changing width follows its walls', () => {
   expect(deviation.furthest).toBeLessThan(5e-6);
 });
 
+test('a long wall between two short ones that lie on one circle with it stays straight', () => {
+  const { channels, deviation } = channelsOf([
+    [
+      [1000, 1000],
+      [2000, 1000],
+      [2000, 1099.96],
+      [1940, 1100],
+      [1060, 1100],
+      [1000, 1099.96],
+    ],
+  ]);
+  expect(channels).toHaveLength(1);
+  expect(channels[0]!.path).toHaveLength(2);
+  expect(deviation.furthest).toBeLessThan(0.04e-6);
+});
+
 test('a round pad at the end of a channel is a port where no holes are drawn', () => {
   // Pad of radius 500 around (1000, 3000); the channel's walls meet it 50 off its middle.
   const x = 1000 + Math.sqrt(500 ** 2 - 50 ** 2);

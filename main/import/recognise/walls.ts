@@ -29,8 +29,9 @@ const MOST_TURN = 0.7;
 const LEAST_CHORDS = 3;
 /** With this many chords coarse ones are believed. */
 const SURE = 6;
-/** Chords of one arc differ by no more than this factor. */
+/** Chords of one arc differ by no more than this factor, few of them by no more than the second. */
 const UNEVEN = 2.2;
+const ALIKE = 1.6;
 
 /** The boundary of an area as walls, loop by loop: chords that follow a circle are one arc again. */
 export function wallsOf({ outer, holes }: Area): Wall[][] {
@@ -153,17 +154,20 @@ function arcRun(path: Path64, from: number): { walls: Wall[]; to: number } | nul
   return { walls, to: end };
 }
 
-/** Inner chords of a true arc are alike; those of the corner of a polygon mostly are not. */
+/**
+ * Inner chords of a true arc are alike; those of the corner of a polygon mostly are not. One inner chord alone is like
+ * itself: then one of those at the ends has to be whole too, or a long wall between two short ones would do.
+ */
 function even(path: Path64, from: number, to: number): boolean {
   if (to - from > 6) return true;
-  let [low, high] = [Infinity, 0];
-  for (let k = from + 1; k < to - 1; k += 1) {
+  const lengths: number[] = [];
+  for (let k = from; k < to; k += 1) {
     const [a, b] = [path[k], path[(k + 1) % path.length]];
-    const length = Math.hypot(b.x - a.x, b.y - a.y);
-    low = Math.min(low, length);
-    high = Math.max(high, length);
+    lengths.push(Math.hypot(b.x - a.x, b.y - a.y));
   }
-  return high <= 1.6 * low;
+  const inner = lengths.slice(1, -1);
+  if (inner.length === 1) inner.push(Math.max(lengths[0], lengths[lengths.length - 1]));
+  return Math.max(...inner) <= ALIKE * Math.min(...inner);
 }
 
 function fits(path: Path64, from: number, to: number, { x, y, r }: Circle): boolean {
