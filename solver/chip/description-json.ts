@@ -22,31 +22,32 @@ function isEscaped(text: string, at: number): boolean {
   return (at - from) % 2 === 1;
 }
 
-/** How many keys were kept of them: of a key that stands twice in one group only the last. */
+/**
+ * How many keys were kept of them: of a key that stands twice in one group only the last. Lists are gone
+ * through in the outermost group alone: what else holds groups in lists only costs the exact look for a slip.
+ */
 function keysKept(value: unknown): number {
   let count = 0;
   const rest: object[] = [];
-  const look = (entry: unknown): void => {
-    if (typeof entry !== 'object' || entry === null) return;
-    // Numbers and points are most of what a long description holds, and they hold no keys.
-    if (Array.isArray(entry) && typeof entry[0] === 'number' && typeof entry.at(-1) !== 'object') {
-      if (entry.length <= 2 || entry.every((part) => typeof part !== 'object')) return;
+  const group = (entry: object): void => {
+    // Of JSON.parse: own keys only, without a list made of them.
+    for (const key in entry) {
+      count += 1;
+      const part = (entry as Record<string, unknown>)[key];
+      if (isGroup(part)) rest.push(part);
     }
-    rest.push(entry);
   };
-  look(value);
-  while (rest.length > 0) {
-    const next = rest.pop()!;
-    if (Array.isArray(next)) for (const entry of next) look(entry);
-    else {
-      // Of JSON.parse: own keys only, without a list made of them.
-      for (const key in next) {
-        count += 1;
-        look((next as Record<string, unknown>)[key]);
-      }
-    }
+  if (!isGroup(value)) return 0;
+  group(value);
+  for (const list of Object.values(value)) {
+    if (Array.isArray(list)) for (const entry of list) if (isGroup(entry)) group(entry);
   }
+  while (rest.length > 0) group(rest.pop()!);
   return count;
+}
+
+function isGroup(value: unknown): value is object {
+  return typeof value === 'object' && value !== null && !Array.isArray(value);
 }
 
 function syntaxProblem(text: string, slip: Slip): Problem {

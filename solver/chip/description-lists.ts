@@ -21,9 +21,12 @@ const CHANNEL_NEEDS = {
 const CHAMBER_KEYS = new Set(['id', 'layer', 'outline']);
 const CHAMBER_NEEDS = { id: '"well"', layer: '"flow"', outline: '[[0, 0], [4000, 0], [4000, 2000]]' };
 
-/** Points left to read: counted before any is built. */
-interface Budget {
+/** What goes along through the lists. */
+interface Along {
+  /** Points left to read: counted before any is built. */
   points: number;
+  /** Channels of one width share one pair: a hundred thousand small lists less to keep. */
+  readonly widths: Map<number, readonly [number, number]>;
 }
 
 /** A plan length; the ordinary number within the plan takes the short way. */
@@ -49,59 +52,97 @@ export function readPoint(value: unknown, unit: LengthUnit, scale: number): Poin
   }
 }
 
-function readPoints(value: unknown, key: string, unit: LengthUnit, scale: number, budget: Budget): Point[] {
-  const raw = at([key], () => readList(value, BOUNDS.points));
-  budget.points -= raw.length;
-  if (budget.points < 0) {
+/**
+ * The points of a path or outline, put in the place of what was read: the value is of this description
+ * alone, and a second tree of small lists is what a long one would spend most of its time on.
+ */
+function readPoints(value: unknown, unit: LengthUnit, scale: number, along: Along): Point[] {
+  const raw = readList(value, BOUNDS.points);
+  along.points -= raw.length;
+  if (along.points < 0) {
     throw new Fault(
       'too-many',
       `takes the points of all paths and outlines together beyond ${BOUNDS.points.toLocaleString('en')}.`,
       'Draw with fewer points; a round bend takes one vertex and a bendRadius.',
-      [key],
     );
   }
-  const points = new Array<Point>(raw.length);
   let i = 0;
   try {
-    for (; i < raw.length; i += 1) points[i] = readPoint(raw[i], unit, scale);
+    for (; i < raw.length; i += 1) toNanometres(raw, i, unit, scale);
   } catch (error) {
-    if (error instanceof Fault) error.path.unshift(key, i);
+    if (error instanceof Fault) error.path.unshift(i);
     throw error;
   }
-  return points;
+  return raw as Point[];
 }
 
-function readWidth(value: unknown, unit: LengthUnit, scale: number): [number, number] {
+function toNanometres(raw: unknown[], i: number, unit: LengthUnit, scale: number): void {
+  const value = raw[i];
+  if (Array.isArray(value) && value.length === 2) {
+    const x: unknown = value[0];
+    const y: unknown = value[1];
+    if (typeof x === 'number' && typeof y === 'number') {
+      const nmX = x * scale;
+      const nmY = y * scale;
+      if (nmX >= 0 && nmX <= BOUNDS.coordinate && nmY >= 0 && nmY <= BOUNDS.coordinate) {
+        value[0] = Math.round(nmX);
+        value[1] = Math.round(nmY);
+        return;
+      }
+    }
+  }
+  raw[i] = readPoint(value, unit, scale);
+}
+
+function readWidth(value: unknown, unit: LengthUnit, scale: number, along: Along): readonly [number, number] {
   if (!Array.isArray(value)) {
     const width = planLength(value, unit, scale);
-    return [width, width];
+    let pair = along.widths.get(width);
+    if (pair === undefined) {
+      pair = [width, width];
+      along.widths.set(width, pair);
+    }
+    return pair;
   }
   const [first, last] = readList(value, 2, 2);
   return [at([0], () => planLength(first, unit, scale)), at([1], () => planLength(last, unit, scale))];
 }
 
-function readChannel(value: unknown, unit: LengthUnit, scale: number, budget: Budget): Channel {
+/**
+ * One channel, without the closures and lists that the general way takes for each field: they would be
+ * most of what the reading of a large description leaves to be cleared away.
+ */
+function readChannel(value: unknown, unit: LengthUnit, scale: number, along: Along): Channel {
   const raw = readKeys(value, CHANNEL_KEYS, CHANNEL_NEEDS);
-  return {
-    id: at(['id'], () => readId(raw.id)),
-    layer: at(['layer'], () => readId(raw.layer)),
-    path: readPoints(raw.path, 'path', unit, scale, budget),
-    width: at(['width'], () => readWidth(raw.width, unit, scale)),
-    bendRadius:
-      raw.bendRadius === undefined ? 0 : at(['bendRadius'], () => planLength(raw.bendRadius, unit, scale)),
-    ...(raw.depth === undefined ? {} : { depth: at(['depth'], () => planLength(raw.depth, unit, scale)) }),
-    ...(raw.tolerance === undefined
-      ? {}
-      : { tolerance: at(['tolerance'], () => readOwnTolerances(raw.tolerance)) }),
-  };
+  let key = 'id';
+  try {
+    const id = readId(raw.id);
+    key = 'layer';
+    const layer = readId(raw.layer);
+    key = 'path';
+    const path = readPoints(raw.path, unit, scale, along);
+    key = 'width';
+    const width = readWidth(raw.width, unit, scale, along);
+    key = 'bendRadius';
+    const bendRadius = raw.bendRadius === undefined ? 0 : planLength(raw.bendRadius, unit, scale);
+    if (raw.depth === undefined && raw.tolerance === undefined) return { id, layer, path, width, bendRadius };
+    key = 'depth';
+    const depth = raw.depth === undefined ? {} : { depth: planLength(raw.depth, unit, scale) };
+    key = 'tolerance';
+    const tolerance = raw.tolerance === undefined ? {} : { tolerance: readOwnTolerances(raw.tolerance) };
+    return { id, layer, path, width, bendRadius, ...depth, ...tolerance };
+  } catch (error) {
+    if (error instanceof Fault) error.path.unshift(key);
+    throw error;
+  }
 }
 
-function readChamber(value: unknown, unit: LengthUnit, scale: number, budget: Budget): Chamber {
+function readChamber(value: unknown, unit: LengthUnit, scale: number, along: Along): Chamber {
   const raw = readKeys(value, CHAMBER_KEYS, CHAMBER_NEEDS);
   return {
     id: at(['id'], () => readId(raw.id)),
     layer: at(['layer'], () => readId(raw.layer)),
-    outline: readPoints(raw.outline, 'outline', unit, scale, budget),
+    outline: at(['outline'], () => readPoints(raw.outline, unit, scale, along)),
   };
 }
 
@@ -126,9 +167,9 @@ export function readPlanLists(
   unit: LengthUnit,
 ): { channels: Channel[]; chambers: Chamber[] } {
   const scale = NM_PER_UNIT[unit];
-  const budget = { points: BOUNDS.points };
+  const along: Along = { points: BOUNDS.points, widths: new Map() };
   return {
-    channels: readEach('channels', channels, (entry) => readChannel(entry, unit, scale, budget)),
-    chambers: readEach('chambers', chambers, (entry) => readChamber(entry, unit, scale, budget)),
+    channels: readEach('channels', channels, (entry) => readChannel(entry, unit, scale, along)),
+    chambers: readEach('chambers', chambers, (entry) => readChamber(entry, unit, scale, along)),
   };
 }

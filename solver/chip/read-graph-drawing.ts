@@ -39,7 +39,7 @@ export class Drawing {
     const count = chip.channels.length;
     this.chip = chip;
     let room = 0;
-    for (const c of chip.channels) room += c.path.length * (c.bendRadius > 0 ? 2 : 1);
+    for (const c of chip.channels) room += (c.path.length - 1) * (c.bendRadius > 0 ? 2 : 1);
     this.elements = new Elements(count, room);
     this.layerOf = new Int32Array(count);
     for (let i = 0; i < count; i++) {

@@ -24,11 +24,13 @@ export interface SiteDraft {
   readonly chambers: readonly string[];
   readonly ports: readonly string[];
   readonly vias: readonly string[];
-  readonly arms: { readonly piece: number; readonly end: 'from' | 'to' }[];
+  arms: { readonly piece: number; readonly end: 'from' | 'to' }[];
 }
 
 /** Most sites have none: they share it. */
 const NONE: readonly string[] = [];
+/** Until the pieces are known. */
+const NO_ARMS: SiteDraft['arms'] = [];
 
 /** Marks of each channel in order of distance: `order` lists mark numbers, channel c from start[c] to start[c+1]. */
 interface Ordered {
@@ -239,7 +241,7 @@ class Labels {
         chambers: NONE,
         ports: NONE,
         vias: NONE,
-        arms: [],
+        arms: NO_ARMS,
       });
     }
     addLayer(this.drafts[id]!, layer);
@@ -269,7 +271,7 @@ class Labels {
       chambers: chambers.map((c) => c.id),
       vias: vias.map((v) => v.id),
       ports: ports.map((p) => p.id),
-      arms: [],
+      arms: NO_ARMS,
     };
     if (chambers.length > 0) {
       const at = centroid(chambers[0]!.outline);
@@ -293,7 +295,7 @@ class Labels {
       chambers: NONE,
       ports: NONE,
       vias: NONE,
-      arms: [],
+      arms: NO_ARMS,
     });
     return { site, low: s, high: s, coreLow: s, coreHigh: s };
   }

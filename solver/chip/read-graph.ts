@@ -7,7 +7,7 @@ import { joinChannels } from './read-graph-joins.ts';
 import { Links } from './read-graph-links.ts';
 import { readOverlaps } from './read-graph-overlaps.ts';
 import { dropDoubles, readPieces } from './read-graph-pieces.ts';
-import { readSites } from './read-graph-sites.ts';
+import { readSites, type SiteDraft } from './read-graph-sites.ts';
 
 /**
  * The drawing as the fluid reads it: what overlaps on a layer is one cavity, a gap is a wall, and
@@ -16,7 +16,7 @@ import { readSites } from './read-graph-sites.ts';
 export function readGraph(chip: Chip): Graph {
   const drawing = drawingOf(chip);
   const findings: Finding[] = [...drawing.findings];
-  const links = new Links(4 * chip.channels.length);
+  const links = new Links(3 * chip.channels.length);
   const encounters = joinChannels(drawing, links);
   const places = readPlaces(drawing, links, findings);
   readOverlaps(drawing, links, encounters, places.areas, findings);
@@ -27,10 +27,7 @@ export function readGraph(chip: Chip): Graph {
     readPieces(drawing, links, channel, holds, pieces);
   });
   if (encounters.sameLine) pieces = dropDoubles(pieces, findings);
-  pieces.forEach((piece, i) => {
-    sites[piece.from]!.arms.push({ piece: i, end: 'from' });
-    sites[piece.to]!.arms.push({ piece: i, end: 'to' });
-  });
+  giveArms(sites, pieces);
   const cavity = cavities(sites.length, pieces);
   return {
     sites,
@@ -40,6 +37,22 @@ export function readGraph(chip: Chip): Graph {
     channelCavity: firstSite.map((site) => cavity[site]!),
     findings,
   };
+}
+
+/** Tells each site its arms; the lists are made as long as they will be, since lists that grow take much more. */
+function giveArms(sites: readonly SiteDraft[], pieces: readonly Piece[]): void {
+  const count = new Int32Array(sites.length);
+  for (const { from, to } of pieces) {
+    count[from]!++;
+    count[to]!++;
+  }
+  for (let i = 0; i < sites.length; i++) sites[i]!.arms = new Array<SiteDraft['arms'][number]>(count[i]!);
+  count.fill(0);
+  for (let i = 0; i < pieces.length; i++) {
+    const { from, to } = pieces[i]!;
+    sites[from]!.arms[count[from]!++] = { piece: i, end: 'from' };
+    sites[to]!.arms[count[to]!++] = { piece: i, end: 'to' };
+  }
 }
 
 /** Number of the connected part of each site, in order of first sites. */

@@ -77,19 +77,23 @@ export function checkChannel(channel: Channel): void {
   const { path, width, bendRadius, depth } = channel;
   if (depth !== undefined) positive(depth, 'depth', 'length');
   checkTolerances(channel.tolerance);
-  for (const end of width) positive(end, 'width', 'length');
+  positive(width[0], 'width', 'length');
+  positive(width[1], 'width', 'length');
   notNegative(bendRadius, 'bendRadius', 'length');
-  if (path.length < 2 || path.every(([x, y]) => x === path[0]![0] && y === path[0]![1])) {
+  if (path.every((point) => point[0] === path[0]![0] && point[1] === path[0]![1])) {
     throw new Fault('shape', 'has no length.', 'Give at least two different points.', ['path']);
   }
   for (let i = 1; i < path.length; i += 1) {
-    const [a, b] = [path[i - 1]!, path[i]!];
-    const [ux, uy] = [b[0] - a[0], b[1] - a[1]];
+    const a = path[i - 1]!;
+    const b = path[i]!;
+    const ux = b[0] - a[0];
+    const uy = b[1] - a[1];
     if (ux === 0 && uy === 0) {
       throw new Fault('shape', 'repeats the point before it.', 'Take one of the two away.', ['path', i]);
     }
     if (i + 1 === path.length) break;
-    const [vx, vy] = [path[i + 1]![0] - b[0], path[i + 1]![1] - b[1]];
+    const vx = path[i + 1]![0] - b[0];
+    const vy = path[i + 1]![1] - b[1];
     const along = ux * vx + uy * vy;
     if (along < 0 && Math.abs(ux * vy - uy * vx) < -1e-6 * along) {
       throw new Fault(

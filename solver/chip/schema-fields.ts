@@ -167,7 +167,8 @@ export function readKeys(
       'Write it between curly brackets.',
     );
   }
-  for (const key of Object.keys(value)) {
+  // Of JSON: own keys only, and no list of them made for each of a hundred thousand groups.
+  for (const key in value) {
     if (known.has(key)) continue;
     throw new Fault(
       'unknown-key',
@@ -176,7 +177,7 @@ export function readKeys(
       [key],
     );
   }
-  for (const key of Object.keys(required)) {
+  for (const key in required) {
     if (!Object.hasOwn(value, key)) {
       throw new Fault('missing', `has no "${key}".`, `Add "${key}", such as ${required[key]}.`);
     }
