@@ -8,7 +8,14 @@ import { type CellMemory, cellMemory } from './lump/cells.ts';
 import { lawMemory } from './lump/laws.ts';
 import type { Lumped, LumpMemory } from './lump/lump.ts';
 import { type PreparedNetwork, preparedFor, prepareNetwork } from './network/prepare.ts';
-import { type Gradient, gradients, gradientsBy, type Target, weightsOf } from './network/sensitivity.ts';
+import {
+  type Gradient,
+  gradients,
+  gradientsBy,
+  type Target,
+  weightRoom,
+  weightsOf,
+} from './network/sensitivity.ts';
 import { solveNetwork } from './network/solve-network.ts';
 import { solveNonlinear } from './network/solve-nonlinear.ts';
 import type { NetworkSolution, NetworkSpec } from './network/spec.ts';
@@ -29,7 +36,10 @@ export interface Memory {
    * its pressures as a start where ducts follow laws of their own.
    */
   network(lumped: Lumped): NetworkSolution;
-  /** How flows of the network that was solved last depend on its parts; null where they follow laws or have faults. */
+  /**
+   * How flows of the network that was solved last depend on its parts; null where they follow laws or have faults.
+   * They hold until others are asked for.
+   */
   gradients(lumped: Lumped, flow: NetworkSolution, targets: readonly Target[]): Gradient[] | null;
   /** The same where they follow laws too: for small changes. */
   slopes(lumped: Lumped, flow: NetworkSolution, targets: readonly Target[]): Gradient[] | null;
@@ -65,13 +75,15 @@ export function emptyMemory(store?: CellStore): Memory {
   let prepared: Prepared | null = null;
   let others: readonly Prepared[] = [];
   let weighed: Weighed | null = null;
+  const room = weightRoom();
   return {
     gradients({ spec, laws }, flow, targets) {
       if (!prepared || laws || flow.faults.length > 0) return null;
       const { network } = prepared;
       if (weighed?.network !== network || !sameWeights(weighed, targets)) {
         const conductance = network.conductance.slice();
-        weighed = { network, conductance, targets, weights: weightsOf(spec, network, targets) };
+        weighed = null;
+        weighed = { network, conductance, targets, weights: weightsOf(spec, network, targets, room) };
       }
       return gradientsBy(spec, network, flow, targets, weighed.weights);
     },

@@ -26,6 +26,7 @@ function bench() {
     hand,
     found,
     begun: () => orders.flatMap((order) => (order.kind === 'solve' ? [order.name] : [])),
+    held: () => orders.flatMap((order) => (order.kind === 'hold' ? [order.ms] : [])),
     dropped: () => orders.flatMap((order) => (order.kind === 'drop' ? [order.id] : [])),
     done: (id: number) =>
       hear({ data: { id, problem: { kind: 'memory', what: 'Not now.', where: '', remedy: 'Wait.' } } }),
@@ -67,4 +68,17 @@ test('what is solved ahead and then waited for is not begun again, and goes befo
   done(1);
   expect(begun()).toEqual([a.name, b.name]);
   expect(found).toEqual([[a.name, DEFAULT_ACCURACY, 1]]);
+});
+
+test('work that was begun is held, and only where there is some', () => {
+  const { hand, held, done } = bench();
+  hand.hold(100);
+  expect(held()).toEqual([]);
+  hand.solve([a], DEFAULT_ACCURACY);
+  hand.hold(100);
+  hand.hold(0);
+  expect(held()).toEqual([100, 0]);
+  done(1);
+  hand.hold(100);
+  expect(held()).toEqual([100, 0]);
 });

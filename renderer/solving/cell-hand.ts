@@ -93,5 +93,9 @@ export function cellHand(start: StartWorker = cellWorker, threads = THREADS): Ce
     listen(given) {
       listener = given;
     },
+    hold(ms) {
+      for (const { worker, begun } of benches)
+        if (begun.size > 0) worker.postMessage({ kind: 'hold', ms } satisfies CellOrder);
+    },
   };
 }

@@ -18,11 +18,20 @@ const later = afterMessages();
 /** Orders begun, the newest last: it goes on first. */
 let begun: { readonly id: number; readonly steps: ReturnType<typeof orderedSteps> }[] = [];
 let going = false;
+/** ms: until then nothing is done. */
+let heldUntil = 0;
+let timer: ReturnType<typeof setTimeout> | undefined;
 
 const goOn = (): void => {
   const job = begun.at(-1);
-  going = job !== undefined;
+  const wait = heldUntil - performance.now();
+  going = job !== undefined && wait <= 0;
+  clearTimeout(timer);
   if (!job) return;
+  if (wait > 0) {
+    timer = setTimeout(goOn, wait);
+    return;
+  }
   const step = job.steps.next();
   if (step.done) {
     begun = begun.filter((other) => other !== job);
@@ -38,6 +47,11 @@ const goOn = (): void => {
 scope.addEventListener('message', ({ data }) => {
   if (data.kind === 'drop') {
     begun = begun.filter(({ id }) => id !== data.id);
+    return;
+  }
+  if (data.kind === 'hold') {
+    heldUntil = performance.now() + data.ms;
+    if (!going) goOn();
     return;
   }
   const { id, shape, name, accuracy } = data;

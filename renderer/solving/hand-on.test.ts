@@ -8,16 +8,17 @@ function bench() {
   const works: (() => void)[] = [];
   const news: News['kind'][] = [];
   const handed: number[] = [];
+  const held: number[] = [];
   const order = solvingThread(
     ({ kind }) => news.push(kind),
     (work) => works.push(work),
-    { solve: (cells) => handed.push(cells.length), listen: () => undefined },
+    { solve: (cells) => handed.push(cells.length), listen: () => undefined, hold: (ms) => held.push(ms) },
     () => undefined,
   );
   const settle = (): void => {
     for (let work = works.shift(); work; work = works.shift()) work();
   };
-  return { order, settle, news, handed };
+  return { order, settle, news, handed, held };
 }
 const chip = teeChip();
 const [first] = chip.channels;
@@ -34,7 +35,7 @@ const wider = (by: number) => ({
 });
 
 test('junctions of an edit that no hand held wait until its answers are painted', () => {
-  const { order, settle, news, handed } = bench();
+  const { order, settle, news, handed, held } = bench();
   order({ kind: 'load', id: 1, chip, options: {} });
   settle();
   order({ kind: 'rest' });
@@ -48,7 +49,10 @@ test('junctions of an edit that no hand held wait until its answers are painted'
   settle();
   expect(news.at(-1)).toBe('short');
   expect(handed.length).toBe(before);
+  // those of the edit before stand still meanwhile
+  expect(held.at(-1)).toBeGreaterThan(0);
   order({ kind: 'rest' });
+  expect(held.at(-1)).toBe(0);
   expect(news).toContain('solved');
   expect(handed.length).toBe(before + 1);
   expect(handed.at(-1)).toBeGreaterThan(0);

@@ -71,7 +71,9 @@ export type CellOrder =
       readonly name: string;
       readonly accuracy: Accuracy;
     }
-  | { readonly kind: 'drop'; readonly id: number };
+  | { readonly kind: 'drop'; readonly id: number }
+  /** Nothing more is done for so many ms; 0 goes on at once. */
+  | { readonly kind: 'hold'; readonly ms: number };
 
 export type CellNews = { readonly id: number } & (
   | { readonly key: string; readonly solution: ShapeSolution }

@@ -279,13 +279,22 @@ function nextPaint(then: () => void): void {
   });
 }
 
-/** The real thread. */
-export function workerThread(): Thread {
-  const worker = new Worker(new URL('./worker.ts', import.meta.url), { type: 'module', name: 'solver' });
+/** The real thread; it begins with the first order, or when it is told to: beside a page that is being drawn it would hold that up. */
+export function workerThread(): Thread & { begin(): void } {
+  const listeners: ((news: News) => void)[] = [];
+  let worker: Worker | null = null;
+  const begun = (): Worker => {
+    if (worker) return worker;
+    worker = new Worker(new URL('./worker.ts', import.meta.url), { type: 'module', name: 'solver' });
+    worker.addEventListener('message', (event: MessageEvent<News>) => {
+      for (const listener of listeners) listener(event.data);
+    });
+    return worker;
+  };
   return {
-    post: (order) => worker.postMessage(order),
-    listen: (listener) =>
-      worker.addEventListener('message', (event: MessageEvent<News>) => listener(event.data)),
-    end: () => worker.terminate(),
+    post: (order) => begun().postMessage(order),
+    listen: (listener) => void listeners.push(listener),
+    end: () => worker?.terminate(),
+    begin: () => void begun(),
   };
 }

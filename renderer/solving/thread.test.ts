@@ -31,6 +31,7 @@ function bench(finds = false, held?: AtHand) {
     listen(given) {
       listener = given;
     },
+    hold: () => undefined,
   };
   const order = solvingThread(
     (told) => {

@@ -22,6 +22,7 @@ import { verdicts } from '../verdict/verdicts.ts';
 import { showIn } from '../words/figure.ts';
 import { atHand } from './at-hand.ts';
 import { exercise } from './exercise.ts';
+import { keeping } from './keep.ts';
 import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 import { shownGraph } from './shown-graph.ts';
 
@@ -31,6 +32,8 @@ export interface CellHand {
   solve(cells: readonly CellSpec[], accuracy: Accuracy, ahead?: boolean): void;
   /** `left` is how many of the newest list are still to come. */
   listen(listener: (cell: CellSpec, accuracy: Accuracy, found: Found, left: number) => void): void;
+  /** Work is left lying for so many ms, after the step that is being done; 0 takes it up again. */
+  hold(ms: number): void;
 }
 /** An answer is given anew for a junction that came only after this many times as long as one takes. */
 const PATIENCE = 3;
@@ -39,9 +42,8 @@ const REST = 25;
 /** ms that what was let go of waits for its junctions, and how few these must be; its preview is shown meanwhile. */
 const AWAITED = 250;
 const MOST_AWAITED = 2;
-/** ms without an order before solved junctions are handed over to be kept, and how many of them may wait. */
-const QUIET = 700;
-const MOST_UNKEPT = 64;
+/** ms that junction threads stand still for an edit, unless its answers are painted before. */
+const HELD = 150;
 /** ms without an order after which the thread may do what nobody asked for. */
 const IDLE = 1500;
 /** Bytes of solved junctions held beside those in use; the project keeps the others. */
@@ -114,9 +116,11 @@ export function solvingThread(
   let took = 0;
   /** ms: when the last order came. */
   let ordered = 0;
-  /** Solved and not yet handed over to be kept, by key. */
-  const unkept = new Map<string, ShapeSolution>();
-  let keeping = false;
+  const unkept = keeping(
+    (key, solution) => tell({ kind: 'keep', cell: { key, bytes: encodeSolution(solution) } }),
+    () => (drag || asked ? 0 : performance.now() - Math.max(ordered, ready)),
+    after,
+  );
   let exercised = false;
   /** Keys the project was asked for, and answers of it that are still to come. */
   const wanted = new Set<string>();
@@ -163,29 +167,6 @@ export function solvingThread(
     }
     // Anew each time: one that came may have been a copy of others.
     if (open === 0 || edited) hand.solve(seenFirst(waiting), accuracyOf(options));
-  };
-
-  /** Hands over what was solved, one by one, while nobody waits for an answer. */
-  const keep = (): void => {
-    const [oldest] = unkept;
-    keeping = oldest !== undefined;
-    if (!oldest) return;
-    if (unkept.size <= MOST_UNKEPT) {
-      const quiet = performance.now() - Math.max(ordered, ready);
-      if (drag || asked || quiet < QUIET) {
-        after(keep, QUIET);
-        return;
-      }
-    }
-    const [key, solution] = oldest;
-    unkept.delete(key);
-    tell({ kind: 'keep', cell: { key, bytes: encodeSolution(solution) } });
-    after(keep, 0);
-  };
-  const keepLater = (key: string, solution: ShapeSolution): void => {
-    unkept.set(key, solution);
-    if (!keeping) after(keep, QUIET);
-    keeping = true;
   };
 
   /** Solves a chip in haste; with what its junctions still wait for. */
@@ -315,7 +296,7 @@ export function solvingThread(
   hand?.listen((cell, accuracy, found, left) => {
     settleWaiting(cell, accuracy, found, memory.cells);
     if (!(found instanceof Problem) && accuracy.flow <= accuracyOf(options).flow) {
-      keepLater(found.key, found.solution);
+      unkept.later(found.key, found.solution);
     }
     settled = false;
     if (stuck) return;
@@ -359,6 +340,7 @@ export function solvingThread(
         const { id, fresh, handsOn } = rest;
         rest = null;
         tell({ kind: 'solved', id, ...whole(fresh) });
+        hand?.hold(0);
         if (handsOn && !drag) handOn(fresh.waiting);
         return;
       }
@@ -408,6 +390,8 @@ export function solvingThread(
       case 'edit': {
         if (!chip) return;
         unheld = !drag;
+        // on two processors what they do would be taken from the answer and its frame
+        if (unheld) hand?.hold(HELD);
         // what the hand lets go of was read and cut already
         newest = order.id;
         edited = true;

@@ -44,6 +44,18 @@ export function gradients(
 }
 
 /**
+ * Where weights lie: given again and again it is made once, since fresh memory of this size takes longer to get than
+ * the weights to find. What it held before is gone.
+ */
+export interface WeightRoom {
+  /** Right sides and weights, one after the other for each target. */
+  right: Float64Array;
+  weights: Float64Array;
+}
+
+export const weightRoom = (): WeightRoom => ({ right: new Float64Array(0), weights: new Float64Array(0) });
+
+/**
  * The weights λ of each target, which depend on the network and not on what drives it by how much.
  * @param network as left by the `solveNetwork` of the same spec
  */
@@ -51,13 +63,15 @@ export function weightsOf(
   spec: NetworkSpec,
   network: PreparedNetwork,
   targets: readonly Target[],
+  room = weightRoom(),
 ): Float64Array[] {
   const { edges, unknown, nodeOf, conductance, factor } = network;
   const { from, to, driveNode } = edges;
   const n = nodeOf.length;
   const touching = edgesAt(edges);
-  const weights = targets.map(() => new Float64Array(edges.nodes));
-  const right = new Float64Array(n * targets.length);
+  const right = cleared(room, 'right', n * targets.length);
+  const all = cleared(room, 'weights', edges.nodes * targets.length);
+  const weights = targets.map((_, t) => all.subarray(t * edges.nodes, (t + 1) * edges.nodes));
   targets.forEach(({ of, index }, t) => {
     const add = (node: number, value: number) => {
       if (unknown[node] >= 0) right[t * n + unknown[node]] += value;
@@ -87,6 +101,13 @@ export function weightsOf(
     for (let u = 0; u < n; u += 1) weight[nodeOf[u]] = right[t * n + u];
   });
   return weights;
+}
+
+/** As many noughts of a room, which grows where it is too small. */
+function cleared(room: WeightRoom, which: keyof WeightRoom, length: number): Float64Array {
+  if (room[which].length < length) room[which] = new Float64Array(length);
+  else room[which].fill(0, 0, length);
+  return room[which].subarray(0, length);
 }
 
 /** As `gradients`, by weights that are known. */
