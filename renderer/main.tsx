@@ -15,10 +15,11 @@ import { solvesEarly } from './state/early.ts';
 import { keptBy } from './state/kept-by.ts';
 
 /**
- * What takes longest begins first: the solving thread starts, and the host is asked what is open, while
- * the page itself is still being read.
+ * What takes longest begins first: the host is asked what is open, and the solving thread starts, while the
+ * page itself is still being read. Where the answers are known already, that thread starts when they are drawn.
  */
-const thread = patient(workerThread());
+const solving = workerThread();
+const thread = patient(solving);
 /** This build of the page: the name of the file bears a hash over everything the page brings in. */
 const build = new URL(import.meta.url).pathname.split('/').at(-1)!;
 const { channelwright } = window as unknown as { readonly channelwright?: Bridge };
@@ -37,10 +38,10 @@ const { solver, early } = solvesEarly(
 );
 // what this window had open before it was loaded anew, or what the program was started with
 const first = client.call('project.state', {}).then(({ state }) => {
-  if (!state) return state;
-  // what has been answered already is drawn first
-  if (keptBy(state.view) === build) thread.hold();
-  early(state.chip);
+  const known = state !== null && keptBy(state.view) === build;
+  if (known) thread.hold();
+  else solving.begin();
+  if (state) early(state.chip);
   return state;
 });
 startTheme();

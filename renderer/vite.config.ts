@@ -27,6 +27,8 @@ export default defineConfig({
     outDir: '../dist/renderer',
     emptyOutDir: true,
     assetsInlineLimit: 0,
+    // one sheet of styles, named by the document: a part with its own would wait for it before it is drawn
+    cssCodeSplit: false,
     modulePreload: { polyfill: false },
     target: 'chrome120',
     reportCompressedSize: true,

@@ -1,8 +1,10 @@
 import { keyShown } from '../commands/command.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
+import { placeName } from '../verdict/answer.ts';
 import { figure, lengthFigure, tally } from '../words/figure.ts';
 import { fluidWords } from '../words/fluid.ts';
+import { spoken } from '../words/spoken.ts';
 import { Figure } from './text-field.tsx';
 
 /** Nothing is chosen: the chip in short, and what can be done next. */
@@ -21,7 +23,7 @@ export function NothingCard() {
         {lengthFigure(chip.outline.width, { digits: 3 })} by{' '}
         {lengthFigure(chip.outline.height, { digits: 3 })}
       </p>
-      {chip.note && <p className="note">{chip.note}</p>}
+      {chip.note && <p className="note">{spoken(chip.note)}</p>}
       {solved.problem && (
         <div className="finding">
           <p>{solved.problem.what}</p>
@@ -32,7 +34,7 @@ export function NothingCard() {
               className="quiet"
               onClick={() => commands.show(refOf(solved.problem!.where, chip))}
             >
-              Show {solved.problem.where}
+              Show {placeName(solved.problem.where)}
             </button>
           )}
         </div>

@@ -1,6 +1,7 @@
 import { missedWords } from '../ledger/tables.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
+import { spoken } from '../words/spoken.ts';
 import { AcceptFinding } from './accept-finding.tsx';
 import { RemedyButton } from './remedy-button.tsx';
 
@@ -25,9 +26,9 @@ export function PlaceFindings({ ids }: { readonly ids: readonly string[] }) {
       {findings.map((finding, i) => (
         // biome-ignore lint/suspicious/noArrayIndexKey: two findings may be alike to the letter
         <div key={`${finding.kind} ${i}`} className="finding">
-          <p>{finding.says}</p>
+          <p>{spoken(finding.says)}</p>
           <p className="soft">
-            {finding.accepted === undefined ? finding.do : `Accepted: ${finding.accepted}`}
+            {finding.accepted === undefined ? spoken(finding.do) : `Accepted: ${finding.accepted}`}
           </p>
           {finding.remedy && finding.accepted === undefined && <RemedyButton remedy={finding.remedy} />}
           <AcceptFinding finding={finding} />

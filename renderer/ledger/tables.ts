@@ -8,6 +8,7 @@ import { placeName, placeRef } from '../verdict/answer.ts';
 import { limitKind } from '../verdict/cells.ts';
 import { bandOf } from '../words/band.ts';
 import { capital, figure } from '../words/figure.ts';
+import { spoken } from '../words/spoken.ts';
 import type { Cell, Column, Row, Table } from './table.ts';
 
 export { csvOf } from './table.ts';
@@ -299,8 +300,8 @@ function findings(chip: Chip, result: Result | null): Table {
       cells: [
         finding.accepted === undefined ? SEVERITY[finding.severity] : 'accepted',
         placeName(finding.where),
-        capital(finding.says),
-        finding.accepted === undefined ? finding.do : `Accepted: ${finding.accepted}`,
+        capital(spoken(finding.says)),
+        finding.accepted === undefined ? spoken(finding.do) : `Accepted: ${finding.accepted}`,
       ],
     }),
   );

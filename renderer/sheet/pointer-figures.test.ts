@@ -97,7 +97,7 @@ test('a wall that the mask cannot hold is said as it arises', () => {
     result: solve(would.chip, { junctions: 'ideal' }),
   };
   const says = pointerSays([part], answer, { result: solve(chip, { junctions: 'ideal' }), graph: null });
-  expect(says[0]).toMatch(/^The wall between .*down.* is 15(\.0)? µm thick/);
+  expect(says[0]).toMatch(/^The wall between .*down.* is 15(\.0)?\sµm thick/);
 });
 
 test('what makes no chip has no answer', () => {

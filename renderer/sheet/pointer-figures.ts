@@ -7,6 +7,7 @@ import type { PartValue, ReadoutLine } from '../tools/tool.ts';
 import { placeName } from '../verdict/answer.ts';
 import { bandOf, plusMinus } from '../words/band.ts';
 import { figure } from '../words/figure.ts';
+import { spoken } from '../words/spoken.ts';
 
 /** A flow that tells how much shear a width costs, where nothing flows yet: 1 µL/min. */
 const TELLING_FLOW = 1e-9 / 60;
@@ -72,7 +73,7 @@ export function pointerSays(
   const out: string[] = [];
   const had = new Set(before.result?.findings.map((finding) => finding.says));
   for (const finding of answer.result?.findings ?? [])
-    if (NEAR.has(finding.kind) && !had.has(finding.says)) out.push(finding.says);
+    if (NEAR.has(finding.kind) && !had.has(finding.says)) out.push(spoken(finding.says));
   const joined = new Set(joins(before.graph, mine));
   const fresh = joins(answer.graph, mine).filter((name) => !joined.has(name));
   if (fresh.length > 0)

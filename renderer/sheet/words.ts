@@ -4,6 +4,7 @@ import type { Kind } from '../../solver/chip/units.ts';
 import type { Xy } from '../geometry/vector.ts';
 import { bandOf, plusMinus } from '../words/band.ts';
 import { capital, counted, figure, typed, unitFor } from '../words/figure.ts';
+import { spoken } from '../words/spoken.ts';
 
 /** What stands beside a port: its name and its most telling figure. */
 export interface PortWords {
@@ -107,7 +108,7 @@ export function placeWords(
       out.push({
         at,
         head: `${figure(judged.worst, kind, { digits: 3 })}${plusMinus(judged.band)} here`,
-        more: `limit ${figure(judged.limit, kind, { digits: 3 })} · ${judged.name}`,
+        more: `limit ${figure(judged.limit, kind, { digits: 3 })} · ${judged.name}`,
         alarm: true,
         where: judged.where,
       });
@@ -126,7 +127,7 @@ export function placeWords(
     alike.delete(finding.kind);
     const more =
       count > 1 ? `${finding.do} ${capital(counted(count - 1, 'more', 'more'))} like it.` : finding.do;
-    out.push({ at, head: finding.says, more, alarm: false, where: finding.where });
+    out.push({ at, head: spoken(finding.says), more: spoken(more), alarm: false, where: finding.where });
   }
   return out.slice(0, most);
 }

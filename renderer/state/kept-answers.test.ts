@@ -81,7 +81,43 @@ test('answers hold for no other chip, build or units', async () => {
   expect(answersKept(view, { ...now, chip: { ...chip, channels: [wider, ...others] } })).toBeNull();
   expect(answersKept(view, { ...now, by: 'index-2.js' })).toBeNull();
   expect(answersKept(view, { ...now, units: { pressure: 'psi' } })).toBeNull();
-  expect(fingerprint(chip)).not.toBe(fingerprint({ ...chip, name: `${chip.name}.` }));
+});
+
+test('chips are told apart by whatever they hold, not by the order in which it is written', () => {
+  const own = fingerprint(chip);
+  const [feed, ...others] = chip.channels;
+  const turned = Object.fromEntries(Object.entries(chip).reverse()) as unknown as Chip;
+  expect(fingerprint(turned)).toBe(own);
+  const channels = [{ ...feed!, depth: undefined } as unknown as typeof feed & object, ...others];
+  expect(fingerprint({ ...chip, channels })).toBe(own);
+  const changed: readonly Chip[] = [
+    { ...chip, name: `${chip.name}.` },
+    { ...chip, channels: [...others, feed!] },
+    { ...chip, channels: others },
+    {
+      ...chip,
+      channels: [{ ...feed!, id: others[0]!.id }, { ...others[0]!, id: feed!.id }, ...others.slice(1)],
+    },
+    { ...chip, channels: [{ ...feed!, width: [feed!.width[0], feed!.width[1] + 1] }, ...others] },
+    { ...chip, channels: [{ ...feed!, path: [...feed!.path].reverse() }, ...others] },
+    { ...chip, channels: [{ ...feed!, bendRadius: feed!.bendRadius + 1 }, ...others] },
+    { ...chip, outline: { ...chip.outline, width: chip.outline.height, height: chip.outline.width } },
+  ];
+  const marks = [chip, ...changed].map(fingerprint);
+  expect(new Set(marks).size).toBe(marks.length);
+});
+
+test('a thousand chips that differ by a nanometre here or there have a thousand fingerprints', () => {
+  const marks = new Set<string>();
+  for (let i = 0; i < 1000; i += 1) {
+    const channels = chip.channels.map((channel, k) =>
+      k === i % chip.channels.length
+        ? { ...channel, width: [channel.width[0] + Math.floor(i / 2), channel.width[1] + (i % 2)] as const }
+        : channel,
+    );
+    marks.add(fingerprint({ ...chip, name: `trial ${i % 7}`, channels }));
+  }
+  expect(marks.size).toBe(1000);
 });
 
 test('whatever a file has in their place is no answer', async () => {

@@ -1,5 +1,4 @@
 import type { Chip } from '../../solver/chip/chip.ts';
-import { writeDescription } from '../../solver/chip/description-write.ts';
 import type { Solver } from '../solving/solver.ts';
 import type { Answer, Margin, Run, Standing } from '../verdict/answer.ts';
 import { verdicts } from '../verdict/verdicts.ts';
@@ -25,19 +24,56 @@ const MOST_CHANNELS = 20_000;
 /** ms without news after which answers are kept. */
 const QUIET = 2000;
 
-/** Tells chips apart by their descriptions: their length and 53 bits of a hash (cyrb53) over them. */
+/**
+ * Tells chips apart by 64 bits of a hash over all they hold. Walks the data itself, whatever the order of its
+ * keys: it is asked for before the page is first drawn, and writing a large description would be a good part of that.
+ */
 export function fingerprint(chip: Chip): string {
-  const text = writeDescription(chip);
-  let a = 0xdeadbeef;
-  let b = 0x41c6ce57;
-  for (let i = 0; i < text.length; i += 1) {
-    const code = text.charCodeAt(i);
-    a = Math.imul(a ^ code, 2654435761);
-    b = Math.imul(b ^ code, 1597334677);
+  const lane = (seed: number): string => (hashOf(chip, seed) >>> 0).toString(36);
+  return `${lane(0x1b873593)}-${lane(0x2545f491)}`;
+}
+
+const real = new Float64Array(1);
+const halves = new Uint32Array(real.buffer);
+
+function mixed(hash: number, with32: number): number {
+  const h = Math.imul(hash ^ with32, 0x9e3779b1);
+  return Math.imul(h ^ (h >>> 15), 0x85ebca77);
+}
+
+function hashOf(value: unknown, seed: number): number {
+  if (typeof value === 'number') {
+    // files know no negative nought
+    real[0] = value + 0;
+    return mixed(mixed(seed, halves[0]!), halves[1]!);
   }
-  a = Math.imul(a ^ (a >>> 16), 2246822507) ^ Math.imul(b ^ (b >>> 13), 3266489909);
-  b = Math.imul(b ^ (b >>> 16), 2246822507) ^ Math.imul(a ^ (a >>> 13), 3266489909);
-  return `${text.length}-${(4294967296 * (2097151 & b) + (a >>> 0)).toString(36)}`;
+  if (typeof value === 'string') {
+    let h = mixed(seed, value.length);
+    for (let i = 0; i < value.length; i += 1) h = mixed(h, value.charCodeAt(i));
+    return h;
+  }
+  if (Array.isArray(value)) {
+    let h = mixed(seed, ~value.length);
+    for (const entry of value) h = hashOf(entry, h);
+    return h;
+  }
+  if (typeof value !== 'object' || value === null) return mixed(seed, value === null ? 1 : value ? 2 : 3);
+  let sum = mixed(seed, 4);
+  for (const key in value) {
+    const entry = (value as Record<string, unknown>)[key];
+    if (entry !== undefined) sum = (sum + hashOf(entry, mixed(seed, keyHash(key)))) | 0;
+  }
+  return mixed(sum, 5);
+}
+
+const keyHashes = new Map<string, number>();
+/** Keys are few; names of parts are values. */
+function keyHash(key: string): number {
+  const known = keyHashes.get(key);
+  if (known !== undefined) return known;
+  const found = hashOf(key, 0x3c6ef372);
+  if (keyHashes.size < 1000) keyHashes.set(key, found);
+  return found;
 }
 
 /** The kept answers that hold for this chip as this build and these units tell it; null where there are none. */

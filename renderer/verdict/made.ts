@@ -1,6 +1,7 @@
 import { PROCESSES } from '../../solver/checks/process.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { counted, lengthFigure } from '../words/figure.ts';
+import { spoken } from '../words/spoken.ts';
 import { type Answer, type Evidence, placeRef, strong } from './answer.ts';
 import { BUILD_KINDS } from './finding-kinds.ts';
 
@@ -38,7 +39,7 @@ export function madeAnswer({ chip, result }: Evidence): Answer {
       standing: stops.some((finding) => finding.severity === 'stop') ? 'no' : 'unknown',
       says: [
         first.severity === 'stop' ? 'No: ' : 'Doubtful: ',
-        first.says.replace(/\.$/, ''),
+        spoken(first.says).replace(/\.$/, ''),
         stops.length > 1 ? `, and ${counted(stops.length - 1, 'more finding', 'more findings')}.` : '.',
       ],
       margin: null,

@@ -1,6 +1,7 @@
 import type { Port } from '../../solver/chip/chip.ts';
 import type { PumpResult, Result } from '../../solver/chip/result.ts';
 import { counted, figure } from '../words/figure.ts';
+import { spoken } from '../words/spoken.ts';
 import { type Answer, type Evidence, type Margin, placeName, strong, unsolved } from './answer.ts';
 import { PUMP_KINDS } from './finding-kinds.ts';
 
@@ -35,7 +36,7 @@ export function pumpAnswer(evidence: Evidence): Answer {
       standing: 'no',
       says: [
         'No: ',
-        first.says.replace(/\.$/, ''),
+        spoken(first.says).replace(/\.$/, ''),
         found.length > 1 ? `, and ${counted(found.length - 1, 'more finding', 'more findings')}.` : '.',
       ],
       margin,
@@ -75,6 +76,7 @@ function notAsked(result: Result, { chip }: Evidence, open: ReadonlySet<string>)
   const lowest = ports.reduce((a, b) => (b.pressure < a.pressure ? b : a));
   const need = highest.pressure - lowest.pressure;
   const pumps = chip.ports.filter((port) => port.drive.kind === 'flow').length;
+  const fed = chip.ports.find(({ id }) => id === highest.id)?.drive;
   const at = placeName(`port:${highest.id}`);
   const tail =
     lowest.pressure < 0
@@ -83,7 +85,13 @@ function notAsked(result: Result, { chip }: Evidence, open: ReadonlySet<string>)
   return {
     question: QUESTION,
     standing: 'not asked',
-    says: ['It needs ', strong(figure(need, 'pressure', { digits: 3 })), `${tail}; no pump is given.`],
+    says: [
+      'It needs ',
+      strong(figure(need, 'pressure', { digits: 3 })),
+      fed?.kind === 'head'
+        ? `${tail}, which its reservoir gives; what that holds is not stated.`
+        : `${tail}; no pump is given.`,
+    ],
     margin: null,
     culprit: `port:${highest.id}`,
   };

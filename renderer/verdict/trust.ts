@@ -1,6 +1,7 @@
 import { PREVIEW_ACCURACY } from '../../solver/cell/cell.ts';
 import type { Result } from '../../solver/chip/result.ts';
 import { capital, counted, figure, number } from '../words/figure.ts';
+import { spoken } from '../words/spoken.ts';
 import { type Answer, type Evidence, placeRef, strong, unsolved } from './answer.ts';
 import { BUILD_KINDS, PUMP_KINDS } from './finding-kinds.ts';
 
@@ -63,7 +64,7 @@ export function trustAnswer(evidence: Evidence): Answer {
       standing: 'unknown',
       says: [
         first.severity === 'stop' ? 'Not yet: ' : 'With care: ',
-        first.says.replace(/\.$/, ''),
+        spoken(first.says).replace(/\.$/, ''),
         doubts.length > 1 ? `, and ${counted(doubts.length - 1, 'more doubt')}.` : '.',
       ],
       margin: error > 0 ? band(error) : null,

@@ -173,6 +173,15 @@ describe('Can the pump drive it?', () => {
     expect(answer).toMatchObject({ standing: 'not asked', culprit: 'port:in' });
     expect(text(answer)).toBe('It needs 31.2 kPa at port in; no pump is given.');
   });
+  test('a reservoir is no pump', () => {
+    const chip = teeChip();
+    const ports = chip.ports.map((port) =>
+      port.id === 'in' ? { ...port, drive: { kind: 'head', head: 0.15 } as const } : port,
+    );
+    expect(text(ask('pump', { ...chip, ports }, resultOf()))).toBe(
+      'It needs 31.2 kPa at port in, which its reservoir gives; what that holds is not stated.',
+    );
+  });
   test('sucking is said', () => {
     const ports = [
       { id: 'in', pressure: 0, flow: 1, share: 1 },

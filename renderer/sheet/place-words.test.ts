@@ -1,0 +1,129 @@
+import { expect, test } from 'vitest';
+import { PALETTES } from '../look/tokens.ts';
+import { teeChip } from '../testing/chips.ts';
+import { fitted, INSET, toScreen } from './camera.ts';
+import { takeEdge } from './edge.ts';
+import { drawPlaceWords, linesOf } from './place-words.ts';
+import { Room } from './room.ts';
+import { Spatial } from './spatial.ts';
+import type { PlaceWords } from './words.ts';
+
+const MM = 1e6;
+/** px of a sign, about that of the larger face; words at the foot of the sheet would cross its legend. */
+const SIGN = 7.2;
+const FOOT = 58;
+
+interface Line {
+  readonly text: string;
+  readonly left: number;
+  readonly right: number;
+  readonly y: number;
+}
+
+/** A canvas that only remembers which texts were set where, and how many rings. */
+function listening() {
+  const lines: Line[] = [];
+  let rings = 0;
+  const ctx = {
+    textAlign: 'left',
+    measureText: (text: string) => ({ width: SIGN * text.length }),
+    fillText(text: string, x: number, y: number) {
+      const wide = SIGN * text.length;
+      const left = this.textAlign === 'right' ? x - wide : x;
+      lines.push({ text, left, right: left + wide, y });
+    },
+    beginPath: () => undefined,
+    arc: () => {
+      rings += 1;
+    },
+    moveTo: () => undefined,
+    lineTo: () => undefined,
+    stroke: () => undefined,
+    fillRect: () => undefined,
+  };
+  return { ctx: ctx as unknown as CanvasRenderingContext2D, lines, rings: () => rings };
+}
+
+const LONG =
+  'Channels of different depths meet in junction 1, which is solved at one depth between them: resistance inside may be 8.2\u00a0% off.';
+const DO = 'Take that for the error of the split there, or give what meets there one depth.';
+
+function set(places: readonly (readonly [number, number])[], size: { width: number; height: number }) {
+  const chip = { ...teeChip(), outline: { width: 76 * MM, height: 26 * MM } };
+  const camera = fitted({ left: 0, bottom: 0, right: 76 * MM, top: 26 * MM }, size, INSET);
+  const edge = new Room();
+  takeEdge(edge, chip, camera, size);
+  const { ctx, lines, rings } = listening();
+  const words: PlaceWords[] = places.map(([x, y], i) => ({
+    at: [x * MM, y * MM],
+    head: `${i}. ${LONG}`,
+    more: DO,
+    alarm: i === 0,
+    where: '',
+  }));
+  drawPlaceWords(ctx, words, camera, size, PALETTES.light, new Room(), edge, new Spatial(chip));
+  return { lines, rings: rings(), chip, camera, edge };
+}
+
+/** Sizes of the sheet beside a card: pages of 1280 by 720 and of 1440 by 900. */
+const SIZES = [
+  { width: 973, height: 355 },
+  { width: 1095, height: 420 },
+];
+
+test('long words of findings stay in the sheet, off the graduated edge and off the legend, wherever their place is', () => {
+  for (const size of SIZES)
+    for (let x = 1; x < 76; x += 5)
+      for (let y = 1; y < 26; y += 4) {
+        const { lines, edge } = set([[x, y]], size);
+        const where = `${x}, ${y} mm at ${size.width} px`;
+        expect(lines.length, where).toBeGreaterThan(2);
+        for (const { text, left, right, y: middle } of lines) {
+          expect(left, `${where}: ${text}`).toBeGreaterThanOrEqual(0);
+          expect(right, `${where}: ${text}`).toBeLessThanOrEqual(size.width);
+          expect(middle - 8, `${where}: ${text}`).toBeGreaterThanOrEqual(0);
+          expect(middle + 8, `${where}: ${text}`).toBeLessThanOrEqual(size.height - FOOT);
+          expect(edge.free(left, middle - 7, right - left, 14), `${where}: ${text}`).toBe(true);
+        }
+        expect(lines.map(({ text }) => text).join(' '), where).toBe(`0. ${LONG} ${DO}`);
+      }
+});
+
+test('words of several findings keep off one another', () => {
+  const size = SIZES[0]!;
+  const { lines } = set(
+    [
+      [20, 13],
+      [24, 13],
+      [50, 13],
+    ],
+    size,
+  );
+  expect(lines.filter(({ text }) => /^\d\./.test(text)).length).toBeGreaterThan(1);
+  for (const [i, a] of lines.entries())
+    for (const b of lines.slice(i + 1)) {
+      const across = a.left < b.right && b.left < a.right;
+      expect(across && Math.abs(a.y - b.y) < 14, `${a.text} / ${b.text}`).toBe(false);
+    }
+});
+
+test('several findings at one place have one ring', () => {
+  expect(set([[20, 13]], SIZES[1]!).rings).toBe(1);
+  const near = set(
+    [
+      [20, 13],
+      [20.2, 13.1],
+    ],
+    SIZES[1]!,
+  );
+  expect(near.rings).toBe(1);
+  const [x, y] = toScreen(near.camera, SIZES[1]!, [20 * MM, 13 * MM]);
+  for (const { left, right, y: middle } of near.lines)
+    expect(left < x + 11 && right > x - 11 && Math.abs(middle - y) < 18).toBe(false);
+});
+
+test('a sentence is parted at its spaces, and cut only where it has no more lines', () => {
+  expect(linesOf('one two three four', 8, 4)).toEqual(['one two', 'three', 'four']);
+  expect(linesOf('one two three four', 8, 2)).toEqual(['one two', 'three …']);
+  expect(linesOf('may be 5.9\u00a0% off', 8, 4)).toEqual(['may be', '5.9\u00a0%', 'off']);
+});
