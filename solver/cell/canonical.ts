@@ -76,22 +76,26 @@ function reflected(loop: readonly Edge[]): Edge[] {
 /** Per edge: minus its chord, bulge, whether it is a face, turn from the chord before. */
 function word(loop: readonly Edge[], scale: number): number[][] {
   const n = loop.length;
-  const chord = loop.map((edge, i) => {
+  const chord: (readonly [number, number])[] = [];
+  for (let i = 0; i < n; i += 1) {
     const next = loop[(i + 1) % n];
-    return [next.x - edge.x, next.y - edge.y] as const;
-  });
-  return loop.map((edge, i) => {
+    chord.push([next.x - loop[i].x, next.y - loop[i].y]);
+  }
+  const letters: number[][] = [];
+  for (let i = 0; i < n; i += 1) {
+    const edge = loop[i];
     const [ax, ay] = chord[(i + n - 1) % n];
     const [bx, by] = chord[i];
     const turn = Math.atan2(ax * by - ay * bx, ax * bx + ay * by);
     // A turn straight back is the same at +180 and -180 degrees.
-    return [
+    letters.push([
       -Math.hypot(bx, by) * scale,
       edge.bulge,
       edge.tag > 0 ? 1 : 0,
       Math.abs(turn) > Math.PI - 1e-6 ? Math.PI : turn,
-    ];
-  });
+    ]);
+  }
+  return letters;
 }
 
 function compare(a: readonly number[], b: readonly number[]): number {
@@ -107,16 +111,26 @@ interface Candidate {
   readonly start: number;
 }
 
+function letter(
+  words: readonly [number[][], number[][]],
+  { mirrored, start }: Candidate,
+  k: number,
+): number[] {
+  const word = words[mirrored ? 1 : 0];
+  return word[(start + k) % word.length];
+}
+
 /** Starts whose cyclic words are least, by elimination. */
 function leastStarts(words: readonly [number[][], number[][]]): Candidate[] {
   const n = words[0].length;
   let left: Candidate[] = [];
   for (let start = 0; start < n; start += 1) left.push({ mirrored: false, start }, { mirrored: true, start });
   for (let k = 0; k < n && left.length > 1; k += 1) {
-    const at = (c: Candidate): number[] => words[c.mirrored ? 1 : 0][(c.start + k) % n];
-    let least = at(left[0]);
-    for (const c of left) if (compare(at(c), least) < 0) least = at(c);
-    left = left.filter((c) => compare(at(c), least) === 0);
+    let least = letter(words, left[0], k);
+    for (const c of left) if (compare(letter(words, c, k), least) < 0) least = letter(words, c, k);
+    const same: Candidate[] = [];
+    for (const c of left) if (compare(letter(words, c, k), least) === 0) same.push(c);
+    left = same;
     // What is left may differ further on; a cap here keeps long regular outlines from costing n^2.
     if (left.length > MOST_STARTS && k > 64) break;
   }
@@ -159,6 +173,8 @@ interface Built {
   readonly placement: Placement;
 }
 
+const snapped = (value: number, quantum: number): number => Math.round(value / quantum) * quantum + 0;
+
 /** The shape with outer edge `start` laid along +x from the origin, in depths. */
 function build(given: CellShape, loops: readonly Edge[][], from: Candidate, extent: number): Built {
   const { depth } = given;
@@ -170,7 +186,6 @@ function build(given: CellShape, loops: readonly Edge[][], from: Candidate, exte
   const sin = (next.y - origin.y) / length;
   // The odd factor keeps round extents away from where the step changes.
   const quantum = QUANTUM * 2 ** Math.ceil(Math.log2((0.8123 * extent) / depth));
-  const snap = (value: number): number => Math.round(value / quantum) * quantum + 0;
 
   const face = new Map<number, number>();
   const lay = (loop: readonly Edge[], start: number): Edge[] =>
@@ -180,8 +195,8 @@ function build(given: CellShape, loops: readonly Edge[][], from: Candidate, exte
       const dy = (edge.y - origin.y) / depth;
       if (edge.tag > 0 && !face.has(edge.tag)) face.set(edge.tag, face.size + 1);
       return {
-        x: snap(cos * dx + sin * dy),
-        y: snap(cos * dy - sin * dx),
+        x: snapped(cos * dx + sin * dy, quantum),
+        y: snapped(cos * dy - sin * dx, quantum),
         bulge: Math.round(edge.bulge / QUANTUM) * QUANTUM + 0,
         tag: edge.tag > 0 ? (face.get(edge.tag) as number) : 0,
       };
@@ -200,9 +215,9 @@ function build(given: CellShape, loops: readonly Edge[][], from: Candidate, exte
   posts.sort((a, b) => compare(a.at, b.at));
   for (const post of posts) laid.push(lay(post.loop, post.start));
 
-  const numbers = laid.flatMap((loop) =>
-    loop.flatMap((e) => [(e.x * depth) / extent, (e.y * depth) / extent, e.bulge, e.tag]),
-  );
+  const numbers: number[] = [];
+  for (const loop of laid)
+    for (const e of loop) numbers.push((e.x * depth) / extent, (e.y * depth) / extent, e.bulge, e.tag);
   const faceOf = new Int32Array(given.faces).fill(-1);
   for (const [tag, mine] of face) faceOf[mine - 1] = tag - 1;
   return {

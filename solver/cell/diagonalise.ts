@@ -34,7 +34,8 @@ export function diagonaliseTogether(
   const order = Array.from({ length: n }, (_, i) => i).sort((i, j) => a[i * n + i] - a[j * n + j]);
   const lambda = new Float64Array(n);
   const basis = new Float64Array(n * n);
-  order.forEach((from, k) => {
+  for (let k = 0; k < n; k += 1) {
+    const from = order[k];
     lambda[k] = a[from * n + from];
     // basis column = L^-T v
     for (let i = n - 1; i >= 0; i -= 1) {
@@ -42,7 +43,7 @@ export function diagonaliseTogether(
       for (let j = i + 1; j < n; j += 1) sum -= l[j * n + i] * basis[j * n + k];
       basis[i * n + k] = sum / l[i * n + i];
     }
-  });
+  }
   return { lambda, basis };
 }
 

@@ -128,10 +128,11 @@ function lean(profile: Profile, width: number, depth: number): number {
 export function faceWidths(shape: CellShape): number[] {
   const widths = new Array<number>(shape.faces).fill(0);
   for (const loop of shape.loops)
-    loop.forEach((edge, i) => {
-      if (edge.tag === 0) return;
+    for (let i = 0; i < loop.length; i += 1) {
+      const edge = loop[i];
+      if (edge.tag === 0) continue;
       const next = loop[(i + 1) % loop.length];
       widths[edge.tag - 1] += Math.hypot(next.x - edge.x, next.y - edge.y);
-    });
+    }
   return widths;
 }

@@ -40,14 +40,11 @@ export function factorPlane(
   depth: DepthModes,
   halfDepth: number,
 ): StokesFactors {
-  const { velocity, stiffness, mass, pressure } = plane;
-  const modal = (lambda: number): Factor => {
-    const shift = lambda / halfDepth ** 2;
-    for (let e = 0; e < stiffness.length; e += 1) velocity.value[e] = stiffness[e] + shift * mass[e];
-    return factorise(symbolic.velocity, velocity);
-  };
-  const inPlane = Array.from(depth.inPlaneLambda, modal);
-  const across = Array.from(depth.acrossLambda, modal);
+  const { pressure } = plane;
+  const inPlane: Factor[] = [];
+  const across: Factor[] = [];
+  for (const lambda of depth.inPlaneLambda) inPlane.push(modal(plane, symbolic, lambda / halfDepth ** 2));
+  for (const lambda of depth.acrossLambda) across.push(modal(plane, symbolic, lambda / halfDepth ** 2));
   pressure.value.set(plane.pressureMass);
   const massFactor = factorise(symbolic.pressure, pressure);
 
@@ -80,4 +77,11 @@ export function factorPlane(
     onFace,
     shallow: (3 / halfDepth ** 2) * (1 + 2 * ratio ** 2),
   };
+}
+
+/** Stiffness + shift mass, factored. */
+function modal(plane: Plane, symbolic: PlaneSymbolic, shift: number): Factor {
+  const { velocity, stiffness, mass } = plane;
+  for (let e = 0; e < stiffness.length; e += 1) velocity.value[e] = stiffness[e] + shift * mass[e];
+  return factorise(symbolic.velocity, velocity);
 }

@@ -66,7 +66,8 @@ function tableOf(fields: CellFields, patterns: number): WallTable {
   const lid = new Float32Array(patterns * 2 * nodeCount);
   const sides = new Float32Array(patterns * 2 * LEVELS * edges);
   const { inPlaneSlope } = depthValues(depth, 1);
-  const levels = Array.from({ length: LEVELS }, (_, level) => depthValues(depth, level / LEVELS));
+  const levels: ReturnType<typeof depthValues>[] = [];
+  for (let level = 0; level < LEVELS; level += 1) levels.push(depthValues(depth, level / LEVELS));
   for (let c = 0; c < patterns; c += 1) {
     for (let i = 0; i < 2 * nodeCount; i += 1) {
       let sum = 0;
@@ -103,7 +104,8 @@ function largestWallShear(
   const { nodeCount } = mesh;
   const patterns = pressures.length - 1;
   const { lid, sides } = tableOf(fields, patterns);
-  const weights = Float64Array.from({ length: patterns }, (_, c) => pressures[c] - pressures[patterns]);
+  const weights = new Float64Array(patterns);
+  for (let c = 0; c < patterns; c += 1) weights[c] = pressures[c] - pressures[patterns];
   const floor = strongest(lid, nodeCount, weights);
   const edges = mesh.boundaryTag.length;
   const wall = strongest(sides, LEVELS * edges, weights);

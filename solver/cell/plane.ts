@@ -2,6 +2,7 @@ import type { Mesh } from '../mesh/mesh.ts';
 import { Problem } from '../problem/problem.ts';
 import type { SymmetricMatrix } from '../sparse/matrix.ts';
 import { patternOfElements } from '../sparse/pattern.ts';
+import { arrays } from './arrays.ts';
 import { curvedTriangle, straightTriangle, type TriangleIntegrals, triangleWorkspace } from './triangle.ts';
 
 /** The plane operators of a mesh: quadratic velocity that vanishes on walls, linear pressure. */
@@ -184,7 +185,7 @@ function couplingPattern(
 /** Integrals over each face of N_j n, n the unit normal into the fluid: by face, all x then all y. */
 export function faceLoads(plane: Plane, faces: number): Float64Array[] {
   const { mesh, unknown, count } = plane;
-  const loads = Array.from({ length: faces }, () => new Float64Array(2 * count));
+  const loads = arrays(faces, 2 * count);
   for (let e = 0; e < mesh.boundaryTag.length; e += 1) {
     const tag = mesh.boundaryTag[e];
     if (tag < 1 || tag > faces) continue;

@@ -60,22 +60,32 @@ export function portMatrix(
 
 /** Viscous dissipation of each pattern: the integral of grad u : grad u over the whole depth. */
 function dissipated(plane: Plane, depth: DepthModes, halfDepth: number, flow: StokesFields): Float64Array {
-  const { count, velocity, stiffness, mass } = plane;
   const out = new Float64Array(flow.patterns);
-  const x = new Float64Array(count);
-  const y = new Float64Array(count);
-  const add = (lambda: number, field: Float64Array, parts: number): void => {
-    const shift = lambda / halfDepth ** 2;
-    for (let e = 0; e < stiffness.length; e += 1) velocity.value[e] = stiffness[e] + shift * mass[e];
-    for (let column = 0; column < flow.patterns * parts; column += 1) {
-      x.set(field.subarray(column * count, (column + 1) * count));
-      multiply(velocity, x, y);
-      let sum = 0;
-      for (let i = 0; i < count; i += 1) sum += x[i] * y[i];
-      out[Math.floor(column / parts)] += 2 * halfDepth * sum;
-    }
-  };
-  flow.inPlane.forEach((field, k) => void add(depth.inPlaneLambda[k], field, 2));
-  flow.across.forEach((field, m) => void add(depth.acrossLambda[m], field, 1));
+  for (let k = 0; k < flow.inPlane.length; k += 1)
+    addPower(plane, halfDepth, depth.inPlaneLambda[k], flow.inPlane[k], 2, out);
+  for (let m = 0; m < flow.across.length; m += 1)
+    addPower(plane, halfDepth, depth.acrossLambda[m], flow.across[m], 1, out);
   return out;
+}
+
+/** Adds that of one mode, whose field has `parts` components for each pattern. */
+function addPower(
+  plane: Plane,
+  halfDepth: number,
+  lambda: number,
+  field: Float64Array,
+  parts: number,
+  out: Float64Array,
+): void {
+  const { count, velocity, stiffness, mass } = plane;
+  const shift = lambda / halfDepth ** 2;
+  for (let e = 0; e < stiffness.length; e += 1) velocity.value[e] = stiffness[e] + shift * mass[e];
+  const y = new Float64Array(count);
+  for (let column = 0; column < out.length * parts; column += 1) {
+    const x = field.subarray(column * count, (column + 1) * count);
+    multiply(velocity, x, y);
+    let sum = 0;
+    for (let i = 0; i < count; i += 1) sum += x[i] * y[i];
+    out[Math.floor(column / parts)] += 2 * halfDepth * sum;
+  }
 }

@@ -69,9 +69,11 @@ export function rimPressures(
   pressures: ArrayLike<number>,
 ): ArrayLike<number> {
   if (inner === portMatrix) return pressures;
-  return Float64Array.from({ length: faces }, (_, i) => {
+  const out = new Float64Array(faces);
+  for (let i = 0; i < faces; i += 1) {
     let flow = 0;
     for (let j = 0; j < faces; j += 1) flow += portMatrix[i * faces + j] * pressures[j];
-    return pressures[i] - holes[i] * flow;
-  });
+    out[i] = pressures[i] - holes[i] * flow;
+  }
+  return out;
 }

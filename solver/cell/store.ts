@@ -34,7 +34,9 @@ export function solutionBytes(solution: ShapeSolution): number {
     mesh.boundary,
     mesh.boundaryTag,
   ];
-  return parts.reduce((sum, part) => sum + part.byteLength, 0);
+  let bytes = 0;
+  for (const part of parts) bytes += part.byteLength;
+  return bytes;
 }
 
 /** Keeps the solutions used last, up to `mostBytes` together. */

@@ -1,3 +1,4 @@
+import { arrays } from './arrays.ts';
 import type { DepthModes } from './depth.ts';
 import { integrate, type Plane } from './plane.ts';
 import type { StokesFields } from './stokes.ts';
@@ -41,8 +42,8 @@ export function wallTraction(
         if (wallIndex[boundary[3 * e + i]] < 0) wallIndex[boundary[3 * e + i]] = walls++;
 
   // Residuals: per mode and pattern, x then y (then none) per wall node.
-  const inPlane = Array.from({ length: N }, () => new Float64Array(2 * n * walls));
-  const across = Array.from({ length: acrossModes }, () => new Float64Array(n * walls));
+  const inPlane = arrays(N, 2 * n * walls);
+  const across = arrays(acrossModes, n * walls);
   const work = triangleWorkspace();
   const x = new Float64Array(6);
   const y = new Float64Array(6);
@@ -131,8 +132,8 @@ export function wallTraction(
     }
   }
 
-  const along = Array.from({ length: N }, () => new Float64Array(3 * edges * n));
-  const up = Array.from({ length: acrossModes }, () => new Float64Array(3 * edges * n));
+  const along = arrays(N, 3 * edges * n);
+  const up = arrays(acrossModes, 3 * edges * n);
   for (let e = 0; e < edges; e += 1) {
     if (boundaryTag[e] !== 0) continue;
     const nodes = boundary.subarray(3 * e, 3 * e + 3);

@@ -61,7 +61,8 @@ export function cutBoundary(shape: Shape, sizing: FullSizing, extra: readonly Ed
   const wishes: EdgeWish[] = [...extra, ...gapWishes(curves, previous, size, sizing.size, sizing.across)];
   const corner = corners(curves, previous, size);
   const vertexSize = vertexSizes(curves, previous, following, size, wishes, corner, sizing.growth);
-  const wishesOf: EdgeWish[][] = curves.map(() => []);
+  const wishesOf: EdgeWish[][] = [];
+  for (let e = 0; e < total; e += 1) wishesOf.push([]);
   for (const wish of wishes) wishesOf[wish.edge].push(wish);
 
   const pieces: { edge: number; from: number; to: number; size: number }[] = [];
@@ -73,39 +74,66 @@ export function cutBoundary(shape: Shape, sizing: FullSizing, extra: readonly Ed
     const wished = relaxed(wishesOf[e], sizing.growth * curve.length);
     const tip0 = corner.tip[e];
     const tip1 = corner.tip[f];
-    const wanted = (t: number): number => {
-      const d0 = t * curve.length;
-      const d1 = curve.length - d0;
-      let s = size[e];
-      s = Math.min(
-        s,
-        tip0 ? cone(corner.cone[e], tip0, d0, sizing.growth) : vertexSize[e] + sizing.growth * d0,
-      );
-      s = Math.min(
-        s,
-        tip1 ? cone(corner.cone[f], tip1, d1, sizing.growth) : vertexSize[f] + sizing.growth * d1,
-      );
-      s = Math.min(s, wishAt(wished, t, sizing.growth * curve.length));
-      if (sizing.points.length > 0) {
-        pointAt(curve, t, point);
-        for (const at of sizing.points) {
-          s = Math.min(s, at.size + at.growth * Math.hypot(point[0] - at.x, point[1] - at.y));
-        }
-      }
-      return s;
+    const along: Along = {
+      curve,
+      size: size[e],
+      growth: sizing.growth,
+      tip0,
+      tip1,
+      slope0: tip0 ? corner.cone[e] : vertexSize[e],
+      slope1: tip1 ? corner.cone[f] : vertexSize[f],
+      wished,
+      points: sizing.points,
+      point,
     };
     first[e] = pieces.length;
     const start = tip0 / curve.length;
     const end = 1 - tip1 / curve.length;
-    const shares = spread(wanted, start, end, curve.length);
+    const shares = spread(along, start, end);
     if (tip0) shares.unshift(0);
     if (tip1) shares.push(1);
     for (let k = 0; k + 1 < shares.length; k += 1) {
-      pieces.push({ edge: e, from: shares[k], to: shares[k + 1], size: wanted(shares[k]) });
+      pieces.push({ edge: e, from: shares[k], to: shares[k + 1], size: wanted(along, shares[k]) });
     }
     if (pieces.length > sizing.maxTriangles) throw tooFine(sizing.maxTriangles);
   }
   return assemble(pieces, curves, tag, first, following, corner.tip);
+}
+
+/** What the sizes along one edge depend on. */
+interface Along {
+  readonly curve: Curve;
+  /** Of the edge as a whole. */
+  readonly size: number;
+  readonly growth: number;
+  /** Lengths of the tip pieces at its ends, 0 where there is none. */
+  readonly tip0: number;
+  readonly tip1: number;
+  /** Of the cone at a sharp end; else the size at that end. */
+  readonly slope0: number;
+  readonly slope1: number;
+  readonly wished: readonly EdgeWish[];
+  readonly points: FullSizing['points'];
+  /** To write over. */
+  readonly point: number[];
+}
+
+/** Edge length wanted at share t. Of the module, not of the edge: it is compiled once for all of them. */
+function wanted(along: Along, t: number): number {
+  const { curve, growth, tip0, tip1, points, point } = along;
+  const d0 = t * curve.length;
+  const d1 = curve.length - d0;
+  let s = along.size;
+  s = Math.min(s, tip0 ? cone(along.slope0, tip0, d0, growth) : along.slope0 + growth * d0);
+  s = Math.min(s, tip1 ? cone(along.slope1, tip1, d1, growth) : along.slope1 + growth * d1);
+  s = Math.min(s, wishAt(along.wished, t, growth * curve.length));
+  if (points.length > 0) {
+    pointAt(curve, t, point);
+    for (const at of points) {
+      s = Math.min(s, at.size + at.growth * Math.hypot(point[0] - at.x, point[1] - at.y));
+    }
+  }
+  return s;
 }
 
 export function tooFine(limit: number): Problem {
@@ -183,24 +211,32 @@ function vertexSizes(
   return at;
 }
 
+/** Stretches of an edge, each no longer than about what is wanted there: where it ends, and how many pieces to there. */
+interface Stretches {
+  readonly ends: number[];
+  readonly sums: number[];
+}
+
+function visit(along: Along, a: number, b: number, depth: number, stretches: Stretches): void {
+  const { ends, sums } = stretches;
+  const middle = (a + b) / 2;
+  const s = wanted(along, middle);
+  const { length } = along.curve;
+  if ((b - a) * length > 0.6 * s && depth < 60) {
+    visit(along, a, middle, depth + 1, stretches);
+    visit(along, middle, b, depth + 1, stretches);
+    return;
+  }
+  ends.push(b);
+  sums.push((sums.length > 0 ? sums[sums.length - 1] : 0) + ((b - a) * length) / s);
+}
+
 /** Shares from `start` to `end` such that each piece is about as long as wanted there. */
-function spread(wanted: (t: number) => number, start: number, end: number, length: number): number[] {
-  const ends: number[] = [];
-  const sums: number[] = [];
-  let sum = 0;
-  const visit = (a: number, b: number, depth: number): void => {
-    const middle = (a + b) / 2;
-    const s = wanted(middle);
-    if ((b - a) * length > 0.6 * s && depth < 60) {
-      visit(a, middle, depth + 1);
-      visit(middle, b, depth + 1);
-      return;
-    }
-    sum += ((b - a) * length) / s;
-    ends.push(b);
-    sums.push(sum);
-  };
-  visit(start, end, 0);
+function spread(along: Along, start: number, end: number): number[] {
+  const stretches: Stretches = { ends: [], sums: [] };
+  visit(along, start, end, 0, stretches);
+  const { ends, sums } = stretches;
+  const sum = sums[sums.length - 1];
   const n = Math.max(1, Math.ceil(sum - 0.2));
   const shares = [start];
   let k = 0;

@@ -7,11 +7,13 @@ export interface EdgeWish {
 
 /** Wishes in order along their edge, none larger than what another lets grow there; `growth` per share. */
 export function relaxed(wishes: readonly EdgeWish[], growth: number): EdgeWish[] {
-  const sorted = [...wishes].sort((a, b) => a.t - b.t);
+  const sorted = [...wishes].sort(byShare);
   for (let i = 1; i < sorted.length; i += 1) sorted[i] = lowered(sorted[i], sorted[i - 1], growth);
   for (let i = sorted.length - 2; i >= 0; i -= 1) sorted[i] = lowered(sorted[i], sorted[i + 1], growth);
   return sorted;
 }
+
+const byShare = (a: EdgeWish, b: EdgeWish): number => a.t - b.t;
 
 function lowered(wish: EdgeWish, by: EdgeWish, growth: number): EdgeWish {
   const size = by.size + growth * Math.abs(wish.t - by.t);

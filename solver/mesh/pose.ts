@@ -39,9 +39,7 @@ export function canonicalPose(shape: Shape, sizing: FullSizing): Pose {
   let total = 0;
   for (let i = 0; i < outer.length; i += 1) total += chord(outer, i);
   const scale = 1 / total;
-  const wanted = (edge: Edge): number => Math.min(sizing.size, sizing.wallSize(edge.tag)) * scale;
-
-  const words = cyclicWords(outer, scale, wanted);
+  const words = cyclicWords(outer, scale, sizing);
   const forward = leastRotation(words.forward);
   const backward = leastRotation(words.backward);
   const order = compareCyclic(words.forward, forward, words.backward, backward);
@@ -73,15 +71,40 @@ export function canonicalPose(shape: Shape, sizing: FullSizing): Pose {
       wallSize: (tag) => tagSize.get(tag) ?? Number.POSITIVE_INFINITY,
     },
     back(x, y, count) {
-      const { cos, sin, x0, y0 } = frame;
-      for (let i = 0; i < count; i += 1) {
-        const u = x[i] * total;
-        const v = (mirrored ? -y[i] : y[i]) * total;
-        x[i] = x0 + cos * u - sin * v;
-        y[i] = y0 + sin * u + cos * v;
-      }
+      layBack(frame, mirrored, total, x, y, count);
     },
   };
+}
+
+/** From the frame of the pose to the caller's. */
+function layBack(
+  { cos, sin, x0, y0 }: Posed['frame'],
+  mirrored: boolean,
+  total: number,
+  x: Float64Array,
+  y: Float64Array,
+  count: number,
+): void {
+  for (let i = 0; i < count; i += 1) {
+    const u = x[i] * total;
+    const v = (mirrored ? -y[i] : y[i]) * total;
+    x[i] = x0 + cos * u - sin * v;
+    y[i] = y0 + sin * u + cos * v;
+  }
+}
+
+/** From the caller's frame to that of the pose, whose outline has length 1. */
+function placed(
+  { cos, sin, x0, y0 }: Posed['frame'],
+  mirrored: boolean,
+  scale: number,
+  x: number,
+  y: number,
+): [number, number] {
+  const dx = (x - x0) * scale;
+  const dy = (y - y0) * scale;
+  const v = cos * dy - sin * dx;
+  return [snapped(cos * dx + sin * dy), snapped(mirrored ? -v : v)];
 }
 
 function chord(loop: readonly Edge[], i: number): number {
@@ -91,7 +114,7 @@ function chord(loop: readonly Edge[], i: number): number {
 }
 
 /** One number per edge, travelled either way: equal numbers mean equal edge and equal turn after it. */
-function cyclicWords(loop: readonly Edge[], scale: number, wanted: (edge: Edge) => number) {
+function cyclicWords(loop: readonly Edge[], scale: number, sizing: FullSizing) {
   const n = loop.length;
   const edges: number[][] = [];
   const turns: number[] = [];
@@ -104,7 +127,7 @@ function cyclicWords(loop: readonly Edge[], scale: number, wanted: (edge: Edge) 
     const vx = after.x - here.x;
     const vy = after.y - here.y;
     turns.push(quantised(Math.atan2(ux * vy - uy * vx, ux * vx + uy * vy)));
-    const size = wanted(here);
+    const size = Math.min(sizing.size, sizing.wallSize(here.tag)) * scale;
     edges.push([
       // The longest edge comes first: it gives the frame its direction.
       -quantised(Math.hypot(vx, vy) * scale),
@@ -120,7 +143,8 @@ function cyclicWords(loop: readonly Edge[], scale: number, wanted: (edge: Edge) 
     const name = letter.join(' ');
     if (!rank.has(name)) rank.set(name, rank.size);
   }
-  const word = letters.map((letter) => rank.get(letter.join(' '))!);
+  const word: number[] = [];
+  for (const letter of letters) word.push(rank.get(letter.join(' '))!);
   return { forward: word.slice(0, n), backward: word.slice(n) };
 }
 
@@ -194,19 +218,13 @@ function poseAt(shape: Shape, sizing: FullSizing, scale: number, at: number, mir
   const to = outer[mirrored ? n - 1 - at : (at + 1) % n];
   const length = Math.hypot(to.x - from.x, to.y - from.y);
   const frame = { cos: (to.x - from.x) / length, sin: (to.y - from.y) / length, x0: from.x, y0: from.y };
-  const place = (x: number, y: number): [number, number] => {
-    const dx = (x - frame.x0) * scale;
-    const dy = (y - frame.y0) * scale;
-    const v = frame.cos * dy - frame.sin * dx;
-    return [snapped(frame.cos * dx + frame.sin * dy), snapped(mirrored ? -v : v)];
-  };
-
   const loops: Edge[][] = [];
   const vertexOf: [number, number][][] = [];
   for (let l = 0; l < shape.length; l += 1) {
     const loop = shape[l];
     const m = loop.length;
-    const places = loop.map((edge) => place(edge.x, edge.y));
+    const places: [number, number][] = [];
+    for (const edge of loop) places.push(placed(frame, mirrored, scale, edge.x, edge.y));
     const turned: Edge[] = [];
     const origin: [number, number][] = [];
     let start = mirrored ? (n - at) % n : at;
@@ -232,7 +250,7 @@ function poseAt(shape: Shape, sizing: FullSizing, scale: number, at: number, mir
   holes.sort((a, b) => compareLists([a.loop[0].x, a.loop[0].y], [b.loop[0].x, b.loop[0].y]));
   const points = sizing.points
     .map((point) => {
-      const [x, y] = place(point.x, point.y);
+      const [x, y] = placed(frame, mirrored, scale, point.x, point.y);
       return { x, y, size: rounded(point.size * scale), growth: point.growth };
     })
     .sort((a, b) => compareLists([a.x, a.y, a.size], [b.x, b.y, b.size]));

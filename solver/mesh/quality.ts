@@ -27,20 +27,39 @@ export function leastAngle(mesh: Mesh): number {
  */
 export function leastJacobian(mesh: Mesh, t: number): number {
   const { x, y, triangles } = mesh;
-  const n = (i: number): number => triangles[t + i];
-  const at = (c: Float64Array, u: number, v: number, du: boolean): number => {
-    const w = 1 - u - v;
-    return du
-      ? (1 - 4 * w) * c[n(0)] + (4 * u - 1) * c[n(1)] + 4 * (w - u) * c[n(3)] + 4 * v * (c[n(4)] - c[n(5)])
-      : (1 - 4 * w) * c[n(0)] + (4 * v - 1) * c[n(2)] + 4 * u * (c[n(4)] - c[n(3)]) + 4 * (w - v) * c[n(5)];
-  };
-  const straight = (x[n(1)] - x[n(0)]) * (y[n(2)] - y[n(0)]) - (y[n(1)] - y[n(0)]) * (x[n(2)] - x[n(0)]);
+  const a = triangles[t];
+  const b = triangles[t + 1];
+  const c = triangles[t + 2];
+  const straight = (x[b] - x[a]) * (y[c] - y[a]) - (y[b] - y[a]) * (x[c] - x[a]);
   let least = Number.POSITIVE_INFINITY;
   for (const [u, v] of NODES) {
-    const det = at(x, u, v, true) * at(y, u, v, false) - at(y, u, v, true) * at(x, u, v, false);
+    const det =
+      alongU(x, triangles, t, u, v) * alongV(y, triangles, t, u, v) -
+      alongU(y, triangles, t, u, v) * alongV(x, triangles, t, u, v);
     least = Math.min(least, det / straight);
   }
   return straight > 0 ? least : -1;
+}
+
+/** Derivatives of a coordinate at the local place (u, v) of the triangle at offset t. */
+function alongU(c: Float64Array, triangles: Int32Array, t: number, u: number, v: number): number {
+  const w = 1 - u - v;
+  return (
+    (1 - 4 * w) * c[triangles[t]] +
+    (4 * u - 1) * c[triangles[t + 1]] +
+    4 * (w - u) * c[triangles[t + 3]] +
+    4 * v * (c[triangles[t + 4]] - c[triangles[t + 5]])
+  );
+}
+
+function alongV(c: Float64Array, triangles: Int32Array, t: number, u: number, v: number): number {
+  const w = 1 - u - v;
+  return (
+    (1 - 4 * w) * c[triangles[t]] +
+    (4 * v - 1) * c[triangles[t + 2]] +
+    4 * u * (c[triangles[t + 4]] - c[triangles[t + 3]]) +
+    4 * (w - v) * c[triangles[t + 5]]
+  );
 }
 
 const NODES = [

@@ -82,8 +82,12 @@ const TURNS = [0, 0.7, 1.9];
 
 function triangulateTurned(boundary: Boundary, cos: number, sin: number): Triangulation | null {
   const { count, next } = boundary;
-  const x = boundary.x.map((value, i) => cos * value - sin * boundary.y[i]);
-  const y = boundary.y.map((value, i) => cos * value + sin * boundary.x[i]);
+  const x = new Float64Array(count);
+  const y = new Float64Array(count);
+  for (let i = 0; i < count; i += 1) {
+    x[i] = cos * boundary.x[i] - sin * boundary.y[i];
+    y[i] = cos * boundary.y[i] + sin * boundary.x[i];
+  }
   const coordinates = new Float64Array(2 * count + 8);
   let [x0, y0, x1, y1] = [Infinity, Infinity, -Infinity, -Infinity];
   for (let i = 0; i < count; i += 1) {
