@@ -142,7 +142,7 @@ test('a remedy is made by its button and its finding is gone; a table is edited 
     await answered(page);
     await page.getByRole('tab', { name: /Channels/ }).click();
     await page.getByRole('gridcell', { name: 'lane', exact: true }).click();
-    const finding = page.locator('.card .finding').filter({ hasText: /lane .*15(\.0)? µm/ });
+    const finding = page.locator('.card .finding').filter({ hasText: /lane .*15(\.0)?\sµm/ });
     await finding.first().waitFor();
     await finding.first().getByRole('button').first().click();
     await answered(page);
