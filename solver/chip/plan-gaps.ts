@@ -1,7 +1,8 @@
 import Flatbush from 'flatbush';
 import type { Chip, Nm } from './chip.ts';
 import { type Area, areasOverlap, disc, inArea, polygon } from './geometry/area.ts';
-import { outline } from './geometry/body.ts';
+import { type Body, outline } from './geometry/body.ts';
+import { byPair } from './geometry/by-pair.ts';
 import { type Curve, nearest, pointAt } from './geometry/curve.ts';
 import { TOUCH } from './geometry/tolerance.ts';
 import { type Drawing, drawingOf, layerNumbers } from './read-graph-drawing.ts';
@@ -37,14 +38,19 @@ export function gaps(chip: Chip, below: Nm): Gap[] {
   const index = new Flatbush(solids.length);
   for (const { area } of solids) index.add(area.minX, area.minY, area.maxX, area.maxY);
   index.finish();
+  const meets = (p: Solid, q: Solid): boolean =>
+    drawing.keeps && p.element >= 0 && q.element >= 0
+      ? overlapOf(p.area, q.area, areasOverlap)
+      : areasOverlap(p.area, q.area);
   const thinnest = new Map<string, Gap>();
   for (let i = 0; i < solids.length; i++) {
     const p = solids[i]!;
     const { minX, minY, maxX, maxY } = p.area;
     const near = index.search(minX - below, minY - below, maxX + below, maxY + below, (j) => j > i);
-    for (const j of near.sort((a, b) => a - b)) {
+    if (near.length > 1) near.sort((a, b) => a - b);
+    for (const j of near) {
       const q = solids[j]!;
-      if (q.layer !== p.layer || areasOverlap(p.area, q.area)) continue;
+      if (q.layer !== p.layer || meets(p, q)) continue;
       const wall = (x: number, y: number) => !filled(solids, index, p.layer, x, y);
       const gap = narrowest(p.area.edges, q.area.edges, below, wall);
       if (!gap || gap.width <= TOUCH) continue;
@@ -66,12 +72,25 @@ function solidsOf(chip: Chip, drawing: Drawing): Solid[] {
   return [...solids, ...otherSolids(chip)];
 }
 
+const overlapOf = byPair<Area, boolean>();
+const areas = new WeakMap<Body, Area>();
+
+/** What a body covers; the same object for the same body. */
+function areaOf(b: Body): Area {
+  let area = areas.get(b);
+  if (!area) {
+    const { minX, minY, maxX, maxY } = b;
+    area = { edges: outline(b), minX, minY, maxX, maxY, index: undefined };
+    areas.set(b, area);
+  }
+  return area;
+}
+
 /** What one element of a channel covers. */
 export function elementSolid(chip: Chip, drawing: Drawing, element: number): Solid {
   const b = drawing.body(element);
   const { channel } = b.element;
-  const { minX, minY, maxX, maxY } = b;
-  const area = { edges: outline(b), minX, minY, maxX, maxY, index: undefined };
+  const area = areaOf(b);
   return { id: chip.channels[channel]!.id, layer: drawing.layerOf[channel]!, area, element };
 }
 

@@ -1,6 +1,6 @@
 import Flatbush from 'flatbush';
 import type { Finding } from '../problem/finding.ts';
-import type { Chip } from './chip.ts';
+import type { Channel, Chip } from './chip.ts';
 import { type Body, loopsOverlap, outline } from './geometry/body.ts';
 import { addCentreline } from './geometry/centreline.ts';
 import { pointAt } from './geometry/curve.ts';
@@ -15,6 +15,12 @@ export function layerNumbers(chip: Chip): Map<string, number> {
 /** Elements of a drawing whose bodies are kept, being asked for again and again; more would take too much memory. */
 const MOST_BODIES = 4000;
 
+/**
+ * Bodies of a channel's elements, for as long as it has the same place among the others: an edit elsewhere leaves
+ * them the same objects, so that what was found of two of them need not be found again.
+ */
+const bodiesOf = new WeakMap<Channel, { readonly place: number; readonly bodies: Body[] }>();
+
 /** The channels of a chip in the plan, with an index over what their elements cover. */
 export class Drawing {
   readonly chip: Chip;
@@ -25,7 +31,6 @@ export class Drawing {
   readonly boxes: Float64Array;
   /** Over the boxes; absent where there are none. */
   readonly index: Flatbush | undefined;
-  readonly #bodies: Body[] = [];
   readonly #p = new Float64Array(CORNERS);
   readonly #q = new Float64Array(CORNERS);
 
@@ -63,10 +68,23 @@ export class Drawing {
     this.index = index;
   }
 
+  /** Whether bodies are kept: the same object for the same element of the same channel, in this drawing and others. */
+  get keeps(): boolean {
+    return this.elements.count <= MOST_BODIES;
+  }
+
   body(id: number): Body {
-    if (this.elements.count > MOST_BODIES) return this.#body(id);
-    this.#bodies[id] ??= this.#body(id);
-    return this.#bodies[id];
+    if (!this.keeps) return this.#body(id);
+    const place = this.elements.channel[id]!;
+    const channel = this.chip.channels[place]!;
+    let known = bodiesOf.get(channel);
+    if (known?.place !== place) {
+      known = { place, bodies: [] };
+      bodiesOf.set(channel, known);
+    }
+    const index = id - this.elements.first[place]!;
+    known.bodies[index] ??= this.#body(id);
+    return known.bodies[index];
   }
 
   #body(id: number): Body {

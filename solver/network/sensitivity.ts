@@ -178,7 +178,8 @@ function blockGradient(
 ): Float64Array {
   const { from, to } = edges;
   return Float64Array.from(spec.blocks, (_, b) => {
-    let [ours, theirs] = [0, 0];
+    let ours = 0;
+    let theirs = 0;
     for (let e = edges.blockStart[b]; e < edges.blockStart[b + 1]; e += 1) {
       ours += conductance[e] * (weight[from[e]] - weight[to[e]]) ** 2;
       theirs += conductance[e] * (pressure[from[e]] - pressure[to[e]]) ** 2;

@@ -82,7 +82,8 @@ export function bandsOf(
   /** Of a flow q, and of its share of all that enters; of a duct's own flow, which one that is. */
   const bandOf = ({ weight }: Gradient, q: number, duct: number): { flow: number; share: number } => {
     const { ductFrom, ductTo } = lumped.spec;
-    let [flowOff, shareOff] = [0, 0];
+    let flowOff = 0;
+    let shareOff = 0;
     for (let e = 0; e < ducts.length; e += 1) {
       const drop = weight[ductFrom[e]] - weight[ductTo[e]] - (e === duct ? 1 : 0);
       const by = (drop * flow.ductFlow[e]) / q;
@@ -92,7 +93,8 @@ export function bandsOf(
     // Where a cell's matrix A is off by no more than a share of its energy, |λ·δA·p| ≤ share √(λ·A·λ) √(p·A·p).
     const { start, a, b, conductance } = pairs;
     for (let block = 0; block < blocks.length; block += 1) {
-      let [ofFlow, ofShare] = [0, 0];
+      let ofFlow = 0;
+      let ofShare = 0;
       for (let k = start[block]; k < start[block + 1]; k += 1) {
         const drop = (weight[a[k]] - weight[b[k]]) / q;
         const rest = drop - (whole.weight[a[k]] - whole.weight[b[k]]);

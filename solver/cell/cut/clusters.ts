@@ -37,7 +37,8 @@ export function cluster(drawing: Drawing, found: Sources, options: CutOptions): 
     core.high = Math.min(Math.max(core.high, 0), total);
     byChannel[core.channel]!.push(core);
   }
-  for (const list of byChannel) list.sort((p, q) => p.low - q.low || p.high - q.high || p.source - q.source);
+  for (const list of byChannel)
+    if (list.length > 1) list.sort((p, q) => p.low - q.low || p.high - q.high || p.source - q.source);
   const count = found.weak.length;
   const parent = Int32Array.from({ length: count }, (_, i) => i);
   const root = (i: number): number => {

@@ -1,12 +1,13 @@
 import type { Chip } from '../../chip/chip.ts';
 import { disc } from '../../chip/geometry/area.ts';
 import { type Body, commonCorners } from '../../chip/geometry/body.ts';
+import { byPair } from '../../chip/geometry/by-pair.ts';
 import { tangentAt } from '../../chip/geometry/curve.ts';
 import type { Graph } from '../../chip/graph.ts';
 import { type Drawing, layerNumbers } from '../../chip/read-graph-drawing.ts';
 import { BEND_TURN } from './bounds.ts';
 import { bends } from './core-bends.ts';
-import { endOnEnd, jointOf } from './core-joints.ts';
+import { endOnEnd, type Joint, jointOf } from './core-joints.ts';
 import { chambers, holeContacts } from './core-places.ts';
 import { addSource, type Hole, type Sources, span } from './sources.ts';
 
@@ -67,25 +68,46 @@ function overlaps(chip: Chip, drawing: Drawing, found: Sources): void {
       boxes[4 * i + 3]!,
       (j) => j > i,
     );
-    for (const j of near.sort((p, q) => p - q)) {
+    if (near.length > 1) near.sort((p, q) => p - q);
+    for (const j of near) {
       const a = channel[i]!;
       const b = channel[j]!;
-      if (layerOf[a] !== layerOf[b] || (a === b && j <= i + 1) || !drawing.overlap(i, j)) continue;
+      if (layerOf[a] !== layerOf[b] || (a === b && j <= i + 1)) continue;
       const p = drawing.body(i);
       const q = drawing.body(j);
-      if (a === b && sameBend(p, q)) continue;
-      const joint = jointOf(p, q, drawing);
+      const find = (): Shared | null => sharedOf(drawing, i, j);
+      const shared = drawing.keeps ? sharedBy(p, q, find) : find();
+      if (!shared) continue;
+      const { joint, corners } = shared;
       if (joint) {
         endOnEnd(found, chip, drawing, joint);
         continue;
       }
       const source = addSource(found);
-      const corners = commonCorners(p, q);
       const margin = filletReach(chip, drawing, p, q);
       span(found, p, corners, source, margin);
       span(found, q, corners, source, margin);
     }
   }
+}
+
+/** What two elements have in common: the point that their channels both end on, or the corners of their common ground. */
+interface Shared {
+  readonly joint: Joint | undefined;
+  readonly corners: readonly (readonly [number, number])[];
+}
+
+/** What was found of two bodies, which depends on nothing else. */
+const sharedBy = byPair<Body, Shared | null>();
+
+/** null where they do not overlap, or only beside a slight bend of their one channel. */
+function sharedOf(drawing: Drawing, i: number, j: number): Shared | null {
+  if (!drawing.overlap(i, j)) return null;
+  const p = drawing.body(i);
+  const q = drawing.body(j);
+  if (p.element.channel === q.element.channel && sameBend(p, q)) return null;
+  const joint = jointOf(p, q, drawing);
+  return { joint, corners: joint ? [] : commonCorners(p, q) };
 }
 
 /** Parts of one channel that overlap beside a slight bend, which is no cell. */

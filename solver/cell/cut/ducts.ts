@@ -14,7 +14,8 @@ export class Nodes {
   readonly #graph: Graph;
   readonly #site: Int32Array;
   readonly #buried: Uint8Array;
-  readonly #cut = new Map<string, number>();
+  /** Of each channel, by whole picometres along it. */
+  readonly #cut = new Map<number, Map<number, number>>();
   readonly #hole = new Map<string, number>();
 
   constructor(graph: Graph) {
@@ -36,7 +37,12 @@ export class Nodes {
 
   atCut(channel: number, s: number): number {
     // whole picometres: the same cut reckoned from both sides
-    return this.#named(this.#cut, `${channel} ${Math.round(s * 1000)}`);
+    let cuts = this.#cut.get(channel);
+    if (!cuts) {
+      cuts = new Map();
+      this.#cut.set(channel, cuts);
+    }
+    return this.#named(cuts, Math.round(s * 1000));
   }
 
   atHole(hole: Pick<Hole, 'x' | 'y' | 'site'>): number {
@@ -49,7 +55,7 @@ export class Nodes {
     return mouth.kind === 'end' ? this.atSite(mouth.site) : this.atCut(mouth.channel, mouth.s);
   }
 
-  #named(map: Map<string, number>, key: string): number {
+  #named<K>(map: Map<K, number>, key: K): number {
     let node = map.get(key);
     if (node === undefined) {
       node = this.count++;

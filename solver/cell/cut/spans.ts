@@ -101,9 +101,11 @@ function edge(
   let leg = legLength(widthAt(drawing, channel, s), depth);
   leg = legLength(Math.max(widthAt(drawing, channel, s), widthAt(drawing, channel, s + side * leg)), depth);
   const room = (to: number) => side * (to - s);
-  const port = barriers
-    .filter((b) => room(b.s) > 0 && (next === undefined || room(b.s) <= room(next)))
-    .sort((p, q) => room(p.s) - room(q.s))[0];
+  let port: Barrier | undefined;
+  for (const b of barriers) {
+    if (room(b.s) <= 0 || (next !== undefined && room(b.s) > room(next))) continue;
+    if (!port || room(b.s) < room(port.s)) port = b;
+  }
   if (port) {
     if (room(port.s) <= NEAR_END * leg) return { kind: 'port', s: port.s, site: port.site };
   } else if (next !== undefined) {
