@@ -18,7 +18,7 @@ export function checkOutline(drawn: Drawn, found: Gathered): void {
   const depths = chip.layers.map(({ depth }) => depth * undercut);
   const extra = new Map(chip.layers.map((layer, i) => [layer.id, depths[i]!]));
   const { elements, boxes, layerOf } = drawingOf(chip);
-  chip.channels.forEach(({ id, path, depth }, c) => {
+  for (const [c, { id, path, depth }] of chip.channels.entries()) {
     let box: Box = [Infinity, Infinity, -Infinity, -Infinity];
     for (let e = elements.first[c]!; e < elements.first[c + 1]!; e += 1) {
       box = [
@@ -41,7 +41,7 @@ export function checkOutline(drawn: Drawn, found: Gathered): void {
       open,
       found,
     );
-  });
+  }
   for (const { id, layer, outline } of chip.chambers) {
     const xs = outline.map(([x]) => x);
     const ys = outline.map(([, y]) => y);

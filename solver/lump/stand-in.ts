@@ -50,13 +50,13 @@ export function standIns(
     if (list) list.push(duct);
     else ducts.set(duct.piece, [duct]);
   }
-  graph.pieces.forEach((piece, index) => {
+  for (const [index, piece] of graph.pieces.entries()) {
     const own = (faces.get(index) ?? []).sort((a, b) => a.s - b.s);
     const low = piece.start + piece.trim[0];
     const high = piece.stop - piece.trim[1];
     const fromInside = insides.has(`${piece.layerIndex} ${piece.from}`);
     const toInside = insides.has(`${piece.layerIndex} ${piece.to}`);
-    if (own.length === 0 && !(fromInside && toInside)) return;
+    if (own.length === 0 && !(fromInside && toInside)) continue;
     const marks = [
       ...(fromInside ? [{ s: low, node: siteNode(piece.from) }] : []),
       ...own.filter(({ s }) => s > low + TOUCH && s < high - TOUCH),
@@ -78,7 +78,7 @@ export function standIns(
         along: [a.s / NANOMETRES, b.s / NANOMETRES],
       });
     }
-  });
+  }
   return { stretches, nodeCount };
 }
 

@@ -50,10 +50,10 @@ export function chipNet(
   };
   const own = new Map<number, ReadonlySet<string>>();
   const all = lumped.inner.length === 0 ? lumped.stretches : [...lumped.stretches, ...lumped.inner];
-  all.forEach((stretch, index) => {
+  for (const [index, stretch] of all.entries()) {
     const q = flow.ductFlow[index];
     const size = Math.abs(q);
-    if (!(size > least)) return;
+    if (!(size > least)) continue;
     const piece = graph.pieces[stretch.piece];
     const layer = chip.layers[piece.layerIndex];
     const drop = Math.abs(flow.pressure[stretch.from] - flow.pressure[stretch.to]);
@@ -80,7 +80,7 @@ export function chipNet(
     const known = index < pieces.length ? how : idealStandIn(how);
     if (q > 0) add(stretch.from, stretch.to, size, known, of);
     else add(stretch.to, stretch.from, size, known, of);
-  });
+  }
   const cellPaths = lumped.cells.map((cell, index) => {
     const block = lumped.cellBlock[index];
     if (block < 0) return null;
