@@ -122,13 +122,18 @@ function tensorOf(solution: CellSolution): Float64Array | null {
       layerAt(flow, HEIGHT[level], layers[f]);
     });
     for (let t = 0; t < triangles.length; t += 6) {
-      const [a, b, c] = [triangles[t], triangles[t + 1], triangles[t + 2]];
+      const a = triangles[t];
+      const b = triangles[t + 1];
+      const c = triangles[t + 2];
       const area = ((x[b] - x[a]) * (y[c] - y[a]) - (x[c] - x[a]) * (y[b] - y[a])) / 2;
       // Both halves of depth 1.
       const weight = (WEIGHT[level] * area) / 3;
       for (let side = 0; side < 3; side += 1) {
         const { da, db } = SIDES[side];
-        let [xa, xb, ya, yb] = [0, 0, 0, 0];
+        let xa = 0;
+        let xb = 0;
+        let ya = 0;
+        let yb = 0;
         for (let i = 0; i < 6; i += 1) {
           const node = triangles[t + i];
           xa += da[i] * x[node];
@@ -171,7 +176,8 @@ function layerAt({ mesh, depth, inPlane, across }: VelocityField, height: number
   const { nodeCount } = mesh;
   out.fill(0);
   for (let k = 0; k < inPlane.length; k += 1) {
-    const [value, slope] = [modes.inPlane[k], modes.inPlaneSlope[k] / HALF];
+    const value = modes.inPlane[k];
+    const slope = modes.inPlaneSlope[k] / HALF;
     const mode = inPlane[k];
     for (let node = 0; node < nodeCount; node += 1) {
       const at = 6 * node;
@@ -182,7 +188,8 @@ function layerAt({ mesh, depth, inPlane, across }: VelocityField, height: number
     }
   }
   for (let m = 0; m < across.length; m += 1) {
-    const [value, slope] = [modes.across[m], modes.acrossSlope[m] / HALF];
+    const value = modes.across[m];
+    const slope = modes.acrossSlope[m] / HALF;
     const mode = across[m];
     for (let node = 0; node < nodeCount; node += 1) {
       out[6 * node + 2] += value * mode[node];
@@ -200,7 +207,9 @@ function addProducts(
   tensor: Float64Array,
 ): void {
   for (let j = 0; j < patterns; j += 1) {
-    const [ux, uy, uz] = [velocity[3 * j], velocity[3 * j + 1], velocity[3 * j + 2]];
+    const ux = velocity[3 * j];
+    const uy = velocity[3 * j + 1];
+    const uz = velocity[3 * j + 2];
     for (let k = 0; k < patterns; k += 1) {
       const g = 9 * k;
       const fx = ux * slopes[g] + uy * slopes[g + 1] + uz * slopes[g + 2];

@@ -44,7 +44,10 @@ export function locatorOf(mesh: Mesh): Locator {
   const start = new Int32Array(columns * rows + 1);
   const box = new Int32Array(4 * count);
   for (let t = 0; t < count; t += 1) {
-    let [ax, ay, bx, by] = [x1, y1, x0, y0];
+    let ax = x1;
+    let ay = y1;
+    let bx = x0;
+    let by = y0;
     for (let i = 6 * t; i < 6 * t + 6; i += 1) {
       const node = triangles[i];
       ax = Math.min(ax, x[node]);

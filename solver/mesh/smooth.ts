@@ -26,7 +26,9 @@ const following = (e: number): number => (e % 3 === 2 ? e - 2 : e + 1);
 function move(mesh: Triangulation, start: Int32Array, v: number): void {
   const { x, y, vertex, twin } = mesh;
   const first = start[v];
-  let [sx, sy, n] = [0, 0, 0];
+  let sx = 0;
+  let sy = 0;
+  let n = 0;
   let e = first;
   do {
     const w = vertex[following(e)];
@@ -35,7 +37,8 @@ function move(mesh: Triangulation, start: Int32Array, v: number): void {
     n += 1;
     e = twin[previous(e)];
   } while (e !== first);
-  const [oldX, oldY] = [x[v], y[v]];
+  const oldX = x[v];
+  const oldY = y[v];
   const before = worst(mesh, first);
   x[v] = sx / n;
   y[v] = sy / n;

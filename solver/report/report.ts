@@ -58,7 +58,8 @@ export function report(
   const flows = ductFlows(graph, lumped, flow, drives);
   const pieces = lumped.stretches.map((stretch, index) => {
     const duct = lumped.ducts[index];
-    const [pFrom, pTo] = [flow.pressure[stretch.from] || 0, flow.pressure[stretch.to] || 0];
+    const pFrom = flow.pressure[stretch.from] || 0;
+    const pTo = flow.pressure[stretch.to] || 0;
     return lumped.laws
       ? lawPieceResult(stretch, duct, lumped.laws[index], flows[index], pFrom, pTo, fluid.density)
       : pieceResult(stretch, duct, flows[index], pFrom - pTo, lumped.viscosity, fluid.density);
