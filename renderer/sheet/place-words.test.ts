@@ -1,4 +1,5 @@
 import { expect, test } from 'vitest';
+import type { Chip } from '../../solver/chip/chip.ts';
 import { PALETTES } from '../look/tokens.ts';
 import { teeChip } from '../testing/chips.ts';
 import { fitted, INSET, toScreen } from './camera.ts';
@@ -48,8 +49,17 @@ const LONG =
   'Channels of different depths meet in junction 1, which is solved at one depth between them: resistance inside may be 8.2\u00a0% off.';
 const DO = 'Take that for the error of the split there, or give what meets there one depth.';
 
-function set(places: readonly (readonly [number, number])[], size: { width: number; height: number }) {
-  const chip = { ...teeChip(), outline: { width: 76 * MM, height: 26 * MM } };
+function set(
+  places: readonly (readonly [number, number])[],
+  size: { width: number; height: number },
+  chambers: Chip['chambers'] | null = null,
+) {
+  const drawn = teeChip();
+  const chip: Chip = {
+    ...drawn,
+    ...(chambers && { chambers, channels: [], ports: [] }),
+    outline: { width: 76 * MM, height: 26 * MM },
+  };
   const camera = fitted({ left: 0, bottom: 0, right: 76 * MM, top: 26 * MM }, size, INSET);
   const edge = new Room();
   takeEdge(edge, chip, camera, size);
@@ -105,6 +115,33 @@ test('words of several findings keep off one another', () => {
       const across = a.left < b.right && b.left < a.right;
       expect(across && Math.abs(a.y - b.y) < 14, `${a.text} / ${b.text}`).toBe(false);
     }
+});
+
+test('words keep off what is drawn where there is room beside it', () => {
+  const corners = [
+    [20, 8],
+    [56, 8],
+    [56, 18],
+    [20, 18],
+  ] as const;
+  const outline = corners.map(([x, y]) => [x * MM, y * MM] as const);
+  const chamber = { id: 'wide', layer: 'flow', outline };
+  const { lines, camera } = set(
+    [
+      [62, 13],
+      [62.1, 13],
+    ],
+    SIZES[0]!,
+    [chamber],
+  );
+  expect(lines.filter(({ text }) => /^\d\./.test(text))).toHaveLength(2);
+  const [left, top] = toScreen(camera, SIZES[0]!, outline[3]!);
+  const [right, bottom] = toScreen(camera, SIZES[0]!, outline[1]!);
+  for (const line of lines)
+    expect(
+      line.left < right && line.right > left && line.y + 7 > top && line.y - 7 < bottom,
+      `${line.text} at ${line.y}, the chamber from ${top} to ${bottom}`,
+    ).toBe(false);
 });
 
 test('several findings at one place have one ring', () => {

@@ -11,6 +11,8 @@ const HEAD = 18;
 const MORE = 16;
 /** px at the foot of the sheet, where the legend and the bar of the scale are. */
 const FOOT = 58;
+/** What it costs to cover a run of a channel or a chamber: more than to stand far off. */
+const COVERS = 6;
 /** px round the words that are theirs. */
 const RIM = 4;
 
@@ -127,7 +129,7 @@ function waysToSet(ctx: CanvasRenderingContext2D, { head, more }: PlaceWords): r
       rests,
       wide: Math.max(headWide, widest(rests)),
       high: HEAD * heads.length + MORE * rests.length + 2,
-      cost: i * 0.6 + 6 * cut,
+      cost: i * 0.6 + 40 * cut,
     });
   }
   return ways;
@@ -166,7 +168,7 @@ function roomBeside(
     if (from < 0 || from + across > size.width || over < 0 || over + down > size.height - FOOT) return;
     const ringed = from < x + RING && from + across > x - RING && over < y + RING && over + down > y - RING;
     if (ringed || !room.free(...box) || !edge.free(...box)) return;
-    const cost = cheap + 2 * covered(...box);
+    const cost = cheap + COVERS * covered(...box);
     if (cost >= least) return;
     least = cost;
     best = { left, top, right, laid };

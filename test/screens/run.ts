@@ -155,6 +155,17 @@ const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
     await table(page, /Findings/);
     await press(page, '8');
   },
+  'attached shear': async (page) => {
+    await solved(page, /Attached/);
+    await press(page, '4');
+    await page.mouse.move(500, 400);
+  },
+  reservoir: async (page) => {
+    await solved(page, /crossing/);
+    await table(page, /Ports/, 'sample');
+    await page.getByRole('button', { name: 'Give it a vessel' }).click();
+    await answered(page);
+  },
   'attached cells': async (page) => {
     await solved(page, /Attached/);
     await press(page, '5');
