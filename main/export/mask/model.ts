@@ -42,6 +42,15 @@ export interface MaskModel {
   readonly notes: readonly string[];
 }
 
+/** The name of a port or via, at its place. */
+export interface Label {
+  readonly text: string;
+  readonly x: number;
+  readonly y: number;
+  /** Whether a drawing that sets names ends this one at its place, so that it stays on the chip. */
+  readonly ends: boolean;
+}
+
 export interface MaskPlane {
   /** Id of the layer, or HOLES. */
   readonly name: string;
@@ -58,7 +67,7 @@ export interface MaskPlane {
   /** None or one, a frame round the outline. */
   readonly lane: readonly Shape[];
   /** Names at their places: to be read, never part of what is exposed. */
-  readonly labels: readonly { readonly text: string; readonly x: number; readonly y: number }[];
+  readonly labels: readonly Label[];
   /** What holds of this drawing, in sentences. */
   readonly notes: readonly string[];
   readonly undercut: number;
@@ -208,9 +217,8 @@ function portLabels(
     ...chip.ports.filter(({ layer }) => drawn.has(layer)),
     ...chip.vias.filter((via) => via.layers.some((id) => drawn.has(id))),
   ];
-  return named.map(({ id, at: [x, y] }) => ({
-    text: id,
-    x: about[0] + (mirror ? about[0] - x : x - about[0]) * scale,
-    y: about[1] + (y - about[1]) * scale,
-  }));
+  return named.map(({ id, at }) => {
+    const x = about[0] + (mirror ? about[0] - at[0] : at[0] - about[0]) * scale;
+    return { text: id, x, y: about[1] + (at[1] - about[1]) * scale, ends: x > about[0] };
+  });
 }

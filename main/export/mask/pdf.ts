@@ -88,9 +88,10 @@ function addPage(doc: Doc, fonts: Fonts, model: MaskModel, plane: MaskPlane): vo
 
 function putNotes(doc: Doc, fonts: Fonts, model: MaskModel, plane: MaskPlane, page: Page): void {
   const { box, bar, lines, letters } = page;
-  const put = (text: string, x: number, y: number): void => {
-    const size = POINTS_PER_MM * mm(letters);
-    fonts.draw(text, 'figure', size, POINTS_PER_MM * mm(x - box.x0), POINTS_PER_MM * mm(box.y1 - y));
+  const size = POINTS_PER_MM * mm(letters);
+  const put = (text: string, x: number, y: number, ends = false): void => {
+    const left = POINTS_PER_MM * mm(x - box.x0) - (ends ? fonts.width(text, 'figure', size) : 0);
+    fonts.draw(text, 'figure', size, left, POINTS_PER_MM * mm(box.y1 - y));
   };
   doc.fillColor('black');
   put('10 mm', bar!.x + bar!.length + letters, bar!.y);
@@ -99,7 +100,8 @@ function putNotes(doc: Doc, fonts: Fonts, model: MaskModel, plane: MaskPlane, pa
   if (plane.kind !== 'holes') return;
   doc.fillColor(model.settings.polarity === 'dark-field' ? 'white' : 'black');
   for (const [dx, dy] of shifts(model)) {
-    for (const { text, x, y } of plane.labels) put(text, x + dx + letters, y + dy + letters);
+    for (const { text, x, y, ends } of plane.labels)
+      put(text, x + dx + (ends ? -letters : letters), y + dy + letters, ends);
   }
 }
 

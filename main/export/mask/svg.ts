@@ -82,7 +82,8 @@ function chipPaths(model: MaskModel, plane: MaskPlane, ink: string, letters: num
   // names would be exposed with a layer; on the drawing of holes they tell which is which
   if (model.settings.labels && plane.kind === 'holes' && plane.labels.length > 0) {
     out.push(`<g font-family="DejaVu Sans, sans-serif" font-size="${mm(letters)}" fill="${ink}">`);
-    for (const { text, x, y } of plane.labels) out.push(textAt(x + letters, y + letters, text));
+    for (const { text, x, y, ends } of plane.labels)
+      out.push(textAt(x + (ends ? -letters : letters), y + letters, text, ends));
     out.push('</g>');
   }
   return out;
@@ -92,8 +93,8 @@ function rect(id: string, left: number, top: number, width: number, height: numb
   return `<rect id="${id}" x="${mm(left)}" y="${mm(-top)}" width="${mm(width)}" height="${mm(height)}" fill="${fill}"/>`;
 }
 
-const textAt = (x: number, y: number, text: string): string =>
-  `<text x="${mm(x)}" y="${mm(-y)}">${xml(text)}</text>`;
+const textAt = (x: number, y: number, text: string, ends = false): string =>
+  `<text x="${mm(x)}" y="${mm(-y)}"${ends ? ' text-anchor="end"' : ''}>${xml(text)}</text>`;
 
 function pathOf(shape: Shape): string {
   let d = '';

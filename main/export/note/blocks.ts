@@ -175,10 +175,15 @@ export const unbroken = (text: string): string => text.replaceAll(BEFORE_UNIT, '
 export const counted = (count: number, one: string, many = `${one}s`): string =>
   `${count.toLocaleString('en')} ${count === 1 ? one : many}`;
 
-/** A place as results name it, for people, with its position on the chip where that is known. */
+/** A place as results name it (a piece by its channel), for people, with its position on the chip where that is known. */
 export function placed(where: string, at?: ReadonlyMap<string, readonly [number, number]>): string {
   const name =
-    where === '' ? 'the chip' : where.replace(/^(?:port|chamber):/, '').replace(/^(\w+):(?=.)/, '$1 ');
+    where === ''
+      ? 'the chip'
+      : where
+          .replace(/^(?:port|chamber):/, '')
+          .replace(/^(\w+):(?=.)/, '$1 ')
+          .replace(/#\d+$/, '');
   const found = at?.get(where);
   if (!found) return name;
   const [x, y] = found.map((value) => inUnit(value, 'mm').toFixed(2).replace('-', '−'));

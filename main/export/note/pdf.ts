@@ -1,7 +1,16 @@
 import type { Block, Section } from './blocks.ts';
 import type { Note } from './content.ts';
 import type { Paper } from './drawing.ts';
-import { COLOURS, type Element, MARGIN, PAPERS, type PaperName, Sheet, type Style } from './pdf-page.ts';
+import {
+  COLOURS,
+  type Element,
+  type Line,
+  MARGIN,
+  PAPERS,
+  type PaperName,
+  Sheet,
+  type Style,
+} from './pdf-page.ts';
 import { drawPictures } from './pdf-picture.ts';
 import { drawTable, leastTall } from './pdf-table.ts';
 import { MM_PER_POINT } from './picture.ts';
@@ -202,18 +211,33 @@ function lines(sheet: Sheet, section: Element, { rows, heads }: Extract<Block, {
   sheet.y += 8;
 }
 
+/** One line of what the page is of; a long title is cut short. */
+function headOf(sheet: Sheet, kind: string, title: string, wide: number): Line {
+  const all = sheet.lines([kind + title], FOOT, wide);
+  if (all.length === 1) return all[0]!;
+  const signs = [...title];
+  let [fits, not] = [0, signs.length];
+  while (not - fits > 1) {
+    const middle = (fits + not) >> 1;
+    const some = `${kind}${signs.slice(0, middle).join('').trimEnd()}…`;
+    if (sheet.lines([some], FOOT, wide).length === 1) fits = middle;
+    else not = middle;
+  }
+  return sheet.lines([`${kind}${signs.slice(0, fits).join('').trimEnd()}…`], FOOT, wide)[0]!;
+}
+
 /** "page x of y", what the page is of, and which chip and program it came from. */
 function feet(sheet: Sheet, { title, subtitle, origin }: Note): void {
   const { doc } = sheet;
   const { start, count } = doc.bufferedPageRange();
   const from = `${origin.program} · ${origin.date} · chip ${origin.hash.slice(0, 16)}`;
   const wide = sheet.width - 150;
-  const [head] = sheet.lines([`${title} · ${subtitle.toLowerCase()}`], FOOT, wide);
+  const head = headOf(sheet, `${subtitle} · `, title, wide);
   for (let page = 0; page < count; page += 1) {
     doc.switchToPage(start + page);
     const { height } = doc.page;
     doc.markContent('Artifact', { type: 'Pagination' });
-    if (page > 0 && head) sheet.line(head, FOOT, sheet.left, MARGIN.top - 24);
+    if (page > 0) sheet.line(head, FOOT, sheet.left, MARGIN.top - 24);
     doc
       .lineWidth(0.4)
       .moveTo(sheet.left, height - 44)
