@@ -80,6 +80,25 @@ describe('SVG', () => {
     }
   });
 
+  test('names of holes run towards the middle of the chip, mirrored or not', () => {
+    for (const mirror of [false, true]) {
+      const ends: string[] = [];
+      let end = false;
+      const parser = new SaxesParser();
+      parser.on('opentag', ({ name, attributes }) => {
+        end = name === 'text' && (attributes as Record<string, string>)['text-anchor'] === 'end';
+      });
+      parser.on('text', (part) => {
+        if (end) ends.push(part.trim());
+        end = false;
+      });
+      parser.write(writeSvg(one({ mirror }, 2))).close();
+      // The middle of the chip is at x = 3000; ports stand every 1200 from 1000.
+      const right = NAMES.filter((_, i) => 1000 + 1200 * i > 3000 !== mirror);
+      expect(ends).toEqual(right);
+    }
+  });
+
   test('a browser paints as much dark as there is, on both grounds, once and on a wafer', async () => {
     const wafer = { diameter: 20_000_000, edge: 500_000 };
     const drawn = (

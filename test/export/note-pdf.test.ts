@@ -189,6 +189,15 @@ withPoppler('no heading stands alone at the end of a page, on either paper', asy
   }
 });
 
+withPoppler('a long name heads every page after the first in one line, cut short', async () => {
+  const name = `Crossing ${'of a wash line and a sample line '.repeat(5)}end`;
+  const chip = { ...manyOutlets(30), name };
+  const path = await written('head', notePdf(noteFor(chip, solve(chip, { junctions: 'ideal' })), 'A4'));
+  const [, ...pages] = textOf(path, '-layout').split('\f').slice(0, -1);
+  expect(pages.length).toBeGreaterThan(1);
+  for (const page of pages) expect(page.trimStart()).toMatch(/^Fabrication note · Crossing of a wash .*…\n/);
+});
+
 withPoppler('figures in columns are of even width', async () => {
   const { chip, result } = await solvedDemo('eight-way-splitter.json');
   const path = await written('even', notePdf(noteFor(chip, result), 'A4'));

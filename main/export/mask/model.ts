@@ -120,7 +120,7 @@ export function maskModel(
         settings.layers.map(({ layer }) => layer.id),
         placing,
       ),
-      notes: ['Holes of ports and vias, at the size of the finished part.'],
+      notes: ['At the size of the finished part.'],
       undercut: 0,
       scale: 1,
     });
