@@ -18,6 +18,18 @@ const WORDS: Readonly<Record<Role['kind'], string>> = {
   ignore: 'left out',
 };
 
+/** What a layer holds, leaving out what it has none of: "1 region, 3 bare lines". */
+function counts(regions: number, paths: number, lines: number): string {
+  const of = (n: number, one: string, many: string): string[] =>
+    n === 0 ? [] : [`${n} ${n === 1 ? one : many}`];
+  const all = [
+    ...of(regions, 'region', 'regions'),
+    ...of(paths, 'path with a width', 'paths with a width'),
+    ...of(lines, 'bare line', 'bare lines'),
+  ];
+  return all.length > 0 ? all.join(', ') : 'nothing that is a shape';
+}
+
 /** What each layer of the drawing is on the chip. */
 export function LayerWishes({
   layers,
@@ -39,9 +51,7 @@ export function LayerWishes({
         return (
           <fieldset key={name} className="fields">
             <legend>{name}</legend>
-            <p className="soft small">
-              {regions} regions, {paths} paths with a width, {lines} bare lines
-            </p>
+            <p className="soft small">{counts(regions, paths, lines)}</p>
             <div className="field">
               <label htmlFor={id}>It is</label>
               <select
