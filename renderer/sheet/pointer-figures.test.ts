@@ -2,7 +2,7 @@ import { expect, test } from 'vitest';
 import { readGraph } from '../../solver/chip/read-graph.ts';
 import { solve } from '../../solver/solve.ts';
 import type { Answer } from '../state/live.ts';
-import { partId, wouldBe } from '../state/live.ts';
+import { wouldBe } from '../state/live.ts';
 import { channel, teeChip } from '../testing/chips.ts';
 import type { PartValue } from '../tools/tool.ts';
 import { pointerFigures, pointerSays } from './pointer-figures.ts';
@@ -11,7 +11,7 @@ const mm = 1_000_000;
 const plain = (text: string): string => text.replaceAll('\u00a0', ' ');
 const drawn = (path: readonly (readonly [number, number])[], width = 120_000): PartValue => ({
   kind: 'channel',
-  value: { ...channel('', path, width) },
+  value: { ...channel('channel 1', path, width) },
 });
 
 function answerTo(part: PartValue): Answer {
@@ -63,7 +63,7 @@ test('flow, share and running wall shear are those of the chip as it would be', 
   const lines = new Map(
     pointerFigures(teeChip(), [part], answer).map((line) => [line.name, plain(line.figure)]),
   );
-  const last = answer.result!.channels.find((found) => found.id === partId(teeChip(), part))!.pieces.at(-1)!;
+  const last = answer.result!.channels.find((found) => found.id === part.value.id)!.pieces.at(-1)!;
   expect(last.flow).toBeGreaterThan(0);
   expect(lines.get('flow')).toBe(
     `${(last.flow! * 6e10).toPrecision(3)} µL/min, ${((last.flow! / (1e-8 / 60)) * 100).toPrecision(3)} % ± ${(100 * last.band!.share).toPrecision(2)} %`,

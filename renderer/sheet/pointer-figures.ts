@@ -1,8 +1,11 @@
-import type { Chip } from '../../solver/chip/chip.ts';
-import type { Result } from '../../solver/chip/result.ts';
+import type { Channel, Chip } from '../../solver/chip/chip.ts';
+import type { PieceResult, Result } from '../../solver/chip/result.ts';
+import { metres } from '../../solver/chip/units.ts';
 import { ductFigures } from '../card/duct-figures.ts';
+import { refOfPart } from '../edits/parts.ts';
 import { pathLength } from '../geometry/path.ts';
-import { type Answer, partId } from '../state/live.ts';
+import type { Answer } from '../state/live.ts';
+import type { Ref } from '../state/ref.ts';
 import type { PartValue, ReadoutLine } from '../tools/tool.ts';
 import { placeName } from '../verdict/answer.ts';
 import { bandOf, plusMinus } from '../words/band.ts';
@@ -17,18 +20,21 @@ const TELLING_FLOW = 1e-9 / 60;
  * chip as it would be; resistance by the section's own figures where that is still on its way.
  */
 export function pointerFigures(chip: Chip, parts: readonly PartValue[], answer: Answer): ReadoutLine[] {
-  const part = parts.find((found) => found.kind === 'channel');
-  if (part?.kind !== 'channel' || parts.length > 12) return [];
+  const ours = parts.flatMap((part) => (part.kind === 'channel' ? [part] : []));
+  const fresh = ours.filter((part) => !chip.channels.some(({ id }) => id === part.value.id));
+  // what is drawn goes on through all that is new; of what is dragged the first says how it goes
+  const line = fresh.length > 0 ? fresh : ours.slice(0, 1);
+  const part = line.at(-1);
+  if (!part || parts.length > 12) return [];
   const { value } = part;
   const out: ReadoutLine[] = [];
-  const pieces = answer.preview ? piecesOf(answer.result, partId(chip, part)) : [];
-  const duct = value.width[0] === value.width[1] ? ductFigures(chip, value.layer, value.width[0]) : null;
-  const solved = pieces.reduce((sum, piece) => sum + piece.resistance, 0);
-  const resistance = duct
-    ? (duct.resistance * pathLength(value.path, value.bendRadius)) / 1e9
-    : solved > 0
-      ? solved
-      : null;
+  const piecesOfPart = (one: PartValue) => (answer.preview ? piecesOf(answer.result, one.value.id) : []);
+  const pieces = piecesOfPart(part);
+  const duct = ductFigures(chip, value.layer, Math.min(...value.width));
+  const resistance = line.reduce<number | null>((sum, one) => {
+    const own = sum === null ? null : resistanceOf(chip, one.value, piecesOfPart(one));
+    return own === null ? null : sum! + own;
+  }, 0);
   if (resistance !== null)
     out.push({ name: 'resistance', figure: figure(resistance, 'resistance', { digits: 3 }) });
   const last = pieces.at(-1);
@@ -52,6 +58,30 @@ export function pointerFigures(chip: Chip, parts: readonly PartValue[], answer: 
   return out;
 }
 
+/** By the section's own figures; of a taper by the answer, and until it comes by steps along it. */
+function resistanceOf(chip: Chip, channel: Channel, pieces: readonly PieceResult[]): number | null {
+  const { layer, width, path, bendRadius } = channel;
+  const length = metres(pathLength(path, bendRadius));
+  if (width[0] === width[1]) {
+    const duct = ductFigures(chip, layer, width[0]);
+    return duct && duct.resistance * length;
+  }
+  const solved = pieces.reduce((sum, piece) => sum + piece.resistance, 0);
+  if (solved > 0) return solved;
+  let sum = 0;
+  for (let i = 0; i < TAPER_STEPS; i += 1) {
+    const duct = ductFigures(
+      chip,
+      layer,
+      Math.round(width[0] + ((width[1] - width[0]) * (i + 0.5)) / TAPER_STEPS),
+    );
+    if (!duct) return null;
+    sum += (duct.resistance * length) / TAPER_STEPS;
+  }
+  return sum;
+}
+const TAPER_STEPS = 8;
+
 const piecesOf = (result: Result | null, id: string) =>
   result?.channels.find((channel) => channel.id === id)?.pieces ?? [];
 
@@ -66,10 +96,7 @@ export function pointerSays(
   before: Pick<Answer, 'result' | 'graph'>,
 ): string[] {
   if (parts.length === 0 || !answer.chip) return [];
-  const { chip } = answer;
-  const mine = new Set(parts.map((part) => partId(chip, part)));
-  // a part that is drawn bears the newest id
-  if (parts.some((part) => part.value.id === '')) mine.add(chip.channels.at(-1)?.id ?? '');
+  const mine = new Set(parts.map(refOfPart));
   const out: string[] = [];
   const had = new Set(before.result?.findings.map((finding) => finding.says));
   for (const finding of answer.result?.findings ?? [])
@@ -81,16 +108,18 @@ export function pointerSays(
   return out.slice(0, MOST);
 }
 
-/** What shares a place with some channels: other channels, ports, chambers and vias. */
-function joins(graph: Answer['graph'], mine: ReadonlySet<string>): string[] {
+/** What shares a place with some parts: channels, ports, chambers and vias. */
+function joins(graph: Answer['graph'], mine: ReadonlySet<Ref>): string[] {
   const found = new Set<string>();
   for (const site of graph?.sites ?? []) {
-    const channels = site.arms.map((arm) => graph!.pieces[arm.piece]!.channel);
-    if (!channels.some((id) => mine.has(id))) continue;
-    for (const id of channels) if (!mine.has(id)) found.add(`channel:${id}`);
-    for (const id of site.ports) if (!mine.has(id)) found.add(`port:${id}`);
-    for (const id of site.chambers) found.add(`chamber:${id}`);
-    for (const id of site.vias) found.add(`via:${id}`);
+    const there = [
+      ...site.arms.map((arm) => `channel:${graph!.pieces[arm.piece]!.channel}`),
+      ...site.ports.map((id) => `port:${id}`),
+      ...site.chambers.map((id) => `chamber:${id}`),
+      ...site.vias.map((id) => `via:${id}`),
+    ];
+    if (!there.some((ref) => mine.has(ref))) continue;
+    for (const ref of there) if (!mine.has(ref)) found.add(ref);
   }
   return [...found];
 }

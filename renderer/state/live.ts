@@ -1,10 +1,11 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { type ChipEdit, makeEdit } from '../../solver/chip/edit.ts';
 import { Problem } from '../../solver/problem/problem.ts';
+import { findPart, refOfPart } from '../edits/parts.ts';
 import { toEdit } from '../edits/to-edit.ts';
 import { tidy } from '../geometry/path.ts';
 import type { Live, Solved } from '../solving/solver.ts';
-import { freshId, type PartValue } from '../tools/tool.ts';
+import type { PartValue } from '../tools/tool.ts';
 import type { Desk } from './desk.ts';
 import { useStore } from './store.ts';
 import type { Workbench } from './workbench.ts';
@@ -21,22 +22,19 @@ export function wouldBe(
   const put = parts.map((part): PartValue => {
     if (part.kind !== 'channel') return part;
     const path = tidy(part.value.path) as typeof part.value.path;
-    return { kind: 'channel', value: { ...part.value, id: partId(chip, part), path } };
+    return { kind: 'channel', value: { ...part.value, path } };
   });
   try {
     const edit = toEdit(chip, { label: 'as it would be', put });
-    const drawn = parts.find((part) => part.value.id === '');
-    return { edit, chip: makeEdit(chip, edit).chip, drawn: drawn ? partId(chip, drawn) : null };
+    const last = put.at(-1)!;
+    const drawn = last.kind === 'channel' && !findPart(chip, refOfPart(last)) ? last.value.id : null;
+    return { edit, chip: makeEdit(chip, edit).chip, drawn };
   } catch (error) {
     // there it could not stay; the hand goes on
     if (error instanceof Problem) return null;
     throw error;
   }
 }
-
-/** The id of a part as it would be: one that is drawn has none yet. */
-export const partId = (chip: Chip, part: PartValue): string =>
-  part.value.id === '' ? freshId(chip, part.kind) : part.value.id;
 
 /** Once a frame, asks what would come of what the hand is about to do. */
 export function followHand(desk: Desk, bench: Workbench): () => void {

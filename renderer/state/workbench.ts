@@ -58,15 +58,17 @@ export function createWorkbench(desk: Desk): Workbench {
       const s = scope();
       if (!s) return;
       if ('at' in event) pointer = event.at;
-      const outcome = holding(s).on(event, s);
+      const before = holding(s);
+      const outcome = before.on(event, s);
       const view = desk.view.get();
       desk.view.set({
         ...view,
         ...(outcome.habits && { habits: { ...view.habits, ...outcome.habits } }),
         ...(event.kind !== 'move' && { says: outcome.says ?? '' }),
       });
-      hand.set(outcome.hand);
       const made = outcome.alter ? desk.alter(outcome.alter) : true;
+      // what was drawn and cannot be put stays in the hand; what was dragged goes back to where it was
+      hand.set(made || before.name === 'select' ? outcome.hand : before);
       if (outcome.select && made) desk.view.patch({ selection: outcome.select, panel: 'card' });
       if (outcome.goes === 'select') this.take('select');
       if (outcome.goes === 'card' && made) {

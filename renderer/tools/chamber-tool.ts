@@ -20,6 +20,7 @@ import {
   readLength,
   readPlace,
   rubOut,
+  sizedCorner,
   type Typing,
   typeInto,
 } from './typing.ts';
@@ -69,22 +70,27 @@ const begun = (state: ChamberState): ChamberState => ({
   pressed: null,
 });
 
-/** Typed sizes: width and height of a rectangle, radius of a circle; null where none is typed. */
+/** The far corner, or a place on the rim, under typed sizes and where the hand points; null where none is typed. */
 function sized(state: ChamberState): Xy | null {
   const first = state.points[0];
   if (!first || state.form === 'polygon') return null;
-  const [a, b] = state.typing.texts.map((text) => readLength(text ?? '', 'mm'));
-  if (a == null || !(a > 0)) return null;
-  if (state.form === 'round') return add(first, [a, 0]);
-  const high = b != null && b > 0 ? b : a;
-  return add(first, [a, high]);
+  if (state.form === 'rectangle') return sizedCorner(first, state.at, state.typing.texts);
+  const radius = readLength(state.typing.texts[0] ?? '', 'mm');
+  return radius !== null && radius > 0 ? add(first, [radius, 0]) : null;
 }
+
+/** Why typed sizes cannot be used, '' where they can. */
+const typedFault = ({ form, points, typing }: ChamberState): string =>
+  points.length === 0 || form === 'polygon'
+    ? ''
+    : (typing.texts.map((text) => lengthFault(text, 'mm')).find(Boolean) ?? '');
 
 function outlineOf(state: ChamberState, to: Xy): readonly Point[] | null {
   const first = state.points[0];
   if (!first) return null;
   if (state.form === 'polygon') {
-    const points = same(state.points.at(-1)!, to) ? state.points : [...state.points, to];
+    const drawn = same(state.points.at(-1)!, to) || same(first, to);
+    const points = drawn ? state.points : [...state.points, to];
     return points.length > 2 ? points.map(whole) : null;
   }
   if (state.form === 'round') {
@@ -124,7 +130,10 @@ function place(state: ChamberState, scope: Scope): Outcome<ChamberState> {
         keyed: false,
       },
     };
-  if (state.form !== 'polygon') return finish(state, state.at, scope);
+  if (state.form !== 'polygon') {
+    const fault = typedFault(state);
+    return fault ? { state, says: fault } : finish(state, sized(state) ?? state.at, scope);
+  }
   if (same(first, state.at) || same(state.points.at(-1)!, state.at)) return finish(state, first, scope);
   return { state: { ...state, points: [...state.points, state.at], keyed: false } };
 }
@@ -142,10 +151,8 @@ function accept(state: ChamberState, scope: Scope): Outcome<ChamberState> {
     if (!at) return { state, says: 'A place takes two lengths, such as "5 mm, 13 mm".' };
     return place({ ...state, at: whole(at), typing: noTyping(1) }, scope);
   }
-  for (const typed of state.typing.texts) {
-    const fault = lengthFault(typed, 'mm');
-    if (fault) return { state, says: fault };
-  }
+  const fault = typedFault(state);
+  if (fault) return { state, says: fault };
   const to = sized(state);
   if (to) return finish(state, to, scope);
   return state.keyed ? place(state, scope) : finish(state, state.points[0]!, scope);
@@ -185,7 +192,10 @@ function on(state: ChamberState, event: ToolEvent, scope: Scope): Outcome<Chambe
       if (event.kind === 'move') return { state: aimed };
       if (event.kind === 'down') {
         const placed = place(aimed, scope);
-        return { ...placed, state: { ...placed.state, pressed: placed.alter ? null : aimed.at } };
+        return {
+          ...placed,
+          state: { ...placed.state, pressed: placed.alter || placed.says ? null : aimed.at },
+        };
       }
       const dragged = state.pressed && distance(state.pressed, aimed.at) > 3 * scope.reach;
       return dragged && state.form !== 'polygon'
@@ -200,7 +210,10 @@ function preview(state: ChamberState, scope: Scope): Preview {
   const outline = outlineOf(state, to);
   const first = state.points[0];
   const { texts, field } = state.typing;
-  const typing = (i: number) => (field === i || texts[i] ? { typing: texts[i] ?? '' } : {});
+  const typing = (i: number) => {
+    const fault = lengthFault(texts[i] ?? '', 'mm');
+    return field === i || texts[i] ? { typing: texts[i] ?? '', ...(fault && { fault }) } : {};
+  };
   const readout = !first
     ? [
         {
@@ -224,7 +237,7 @@ function preview(state: ChamberState, scope: Scope): Preview {
             { name: 'height', figure: lengthFigure(Math.abs(to[1] - first[1])), ...typing(1) },
           ];
   return {
-    parts: outline ? [made(state.makes, '', outline, scope)] : [],
+    parts: outline ? [made(state.makes, freshId(scope.chip, state.makes), outline, scope)] : [],
     guide: first && !outline ? [state.points.at(-1)!, state.at] : null,
     cursor: state.at,
     readout,

@@ -1,17 +1,9 @@
-import type { Channel } from '../../solver/chip/chip.ts';
 import { pathLength, tidy } from '../geometry/path.ts';
 import { add, distance, same, sub, times, whole, type Xy } from '../geometry/vector.ts';
-import { lengthFigure, number } from '../words/figure.ts';
+import { counted, lengthFigure, number } from '../words/figure.ts';
+import { channelsOf, type Widths } from './channel-runs.ts';
 import { type Snapped, snap } from './snap.ts';
-import {
-  freshId,
-  type Outcome,
-  type PlaceEvent,
-  type Preview,
-  type Scope,
-  type Tool,
-  type ToolEvent,
-} from './tool.ts';
+import type { Outcome, PlaceEvent, Preview, Scope, Tool, ToolEvent } from './tool.ts';
 import {
   isTyping,
   lengthFault,
@@ -20,40 +12,51 @@ import {
   readAngle,
   readLength,
   readPlace,
+  readWidths,
   rubOut,
   type Typing,
   typeInto,
+  widthsFault,
 } from './typing.ts';
 
 /**
- * Channels drawn point by point. Before the first point a place can be typed; after it length, angle and
- * width. A point on an end, a port or another channel finishes; so does Enter, or the last point again.
+ * Channels drawn point by point. Before the first point a place can be typed; after it length, angle, width
+ * and the radius of bends. A width counts from where it was typed on; where it changes, one channel ends and
+ * the next begins. A point on an end, a port or another channel finishes; so does Enter, or the last point
+ * again.
  */
 export interface ChannelState {
   readonly points: readonly Xy[];
+  /** Of each stretch between two points. */
+  readonly widths: readonly Widths[];
   readonly at: Xy;
   readonly by: Snapped['by'];
   readonly guide: Snapped['guide'];
+  /** Of the stretch that comes next, where nothing else is typed. */
   readonly width: number;
+  readonly bendRadius: number;
   readonly typing: Typing;
   /** The cursor was moved by keys since the last point, so that Enter sets a point there. */
   readonly keyed: boolean;
-  /** Where the button went down; a line can be dragged as well as clicked. */
+  /** Where the hand was as the button went down; a line can be dragged as well as clicked. */
   readonly pressed: Xy | null;
 }
 
-const FIELDS = 3;
+const FIELDS = 4;
 const LENGTH = 0;
 const ANGLE = 1;
 const WIDTH = 2;
+const BENDS = 3;
 
 function start(scope: Scope): ChannelState {
   return {
     points: [],
+    widths: [],
     at: scope.centre,
     by: 'free',
     guide: null,
     width: scope.habits.channelWidth,
+    bendRadius: scope.habits.bendRadius,
     typing: noTyping(1),
     keyed: false,
     pressed: null,
@@ -102,38 +105,63 @@ function straightened(v: Xy): Xy {
   return length === 0 ? [1, 0] : [v[0] / length, v[1] / length];
 }
 
+/** Why what was typed cannot be used, '' where all of it can. */
+function typedFault({ typing, points }: ChannelState): string {
+  if (points.length === 0) return '';
+  const texts = typing.texts;
+  if (Number.isNaN(readAngle(texts[ANGLE]!))) return 'An angle takes degrees, such as "45".';
+  return lengthFault(texts[LENGTH]!, 'mm') || widthsFault(texts[WIDTH]!) || bendsFault(texts[BENDS]!);
+}
+
+/** No radius at all is one, too. */
+const bendsFault = (text: string): string =>
+  readLength(text, 'um') === 0 ? '' : lengthFault(text, 'um').replace('above zero', 'or 0');
+
+/** The width of the stretch that is aimed and the radius of bends, as typed or as they were. */
+function typedShape(state: ChannelState): { readonly width: Widths; readonly bendRadius: number } {
+  const texts = state.points.length === 0 ? [] : state.typing.texts;
+  const width = readWidths(texts[WIDTH] ?? '');
+  const bends = readLength(texts[BENDS] ?? '', 'um');
+  return {
+    width: width?.every((own) => own > 0) ? width : [state.width, state.width],
+    bendRadius: usable(bends) && bends >= 0 ? bends : state.bendRadius,
+  };
+}
+
 /** Adds the aimed point; a point on something else ends the channel unless `extend` goes on through it. */
 function place(state: ChannelState, scope: Scope, extend: boolean | undefined): Outcome<ChannelState> {
+  const fault = typedFault(state);
+  if (fault) return { state, says: fault };
   const last = state.points.at(-1);
   if (last && same(last, state.at)) return finish(state, scope);
-  const points = [...state.points, state.at];
+  const { width, bendRadius } = typedShape(state);
   const next: ChannelState = {
     ...state,
-    points,
-    typing: points.length === 1 ? noTyping(FIELDS) : { ...noTyping(FIELDS), field: LENGTH },
+    points: [...state.points, state.at],
+    widths: last ? [...state.widths, width] : [],
+    width: width[1],
+    bendRadius,
+    typing: noTyping(FIELDS),
     keyed: false,
     guide: null,
   };
   const met = state.by === 'end' || state.by === 'port' || state.by === 'via' || state.by === 'centreline';
-  return points.length > 1 && met && !extend ? finish(next, scope) : { state: next };
+  return next.points.length > 1 && met && !extend ? finish(next, scope) : { state: next };
 }
 
 function finish(state: ChannelState, scope: Scope): Outcome<ChannelState> {
-  const path = tidy(state.points);
-  if (path.length < 2) return { state: { ...start(scope), at: state.at } };
-  const id = freshId(scope.chip, 'channel');
-  const value: Channel = {
-    id,
-    layer: scope.layer,
-    path: path as Channel['path'],
-    width: [state.width, state.width],
-    bendRadius: 0,
-  };
+  const { bendRadius, width } = state;
+  const made = channelsOf(state.points, state.widths, bendRadius, scope);
+  const fresh: ChannelState = { ...start(scope), at: state.at, width, bendRadius };
+  if (made.length === 0) return { state: fresh };
   return {
-    state: { ...start(scope), at: state.at, width: state.width },
-    alter: { label: 'draw a channel', put: [{ kind: 'channel', value }] },
-    select: [`channel:${id}`],
-    habits: { channelWidth: state.width },
+    state: fresh,
+    alter: {
+      label: made.length === 1 ? 'draw a channel' : `draw ${counted(made.length, 'channel')}`,
+      put: made.map((value) => ({ kind: 'channel', value }) as const),
+    },
+    select: made.map(({ id }) => `channel:${id}` as const),
+    habits: { channelWidth: width, bendRadius },
   };
 }
 
@@ -145,19 +173,19 @@ function accept(state: ChannelState, scope: Scope): Outcome<ChannelState> {
     if (!at) return { state, says: 'A place takes two lengths, such as "5 mm, 13 mm".' };
     return place({ ...state, at: whole(at), by: 'free' }, scope, true);
   }
-  const width = readLength(typed[WIDTH]!, 'um');
-  for (const [text, unit] of [
-    [typed[LENGTH]!, 'mm'],
-    [typed[WIDTH]!, 'um'],
-  ] as const) {
-    const fault = lengthFault(text, unit);
-    if (fault) return { state, says: fault };
-  }
-  if (Number.isNaN(readAngle(typed[ANGLE]!))) return { state, says: 'An angle takes degrees, such as "45".' };
-  const wide = usable(width) ? { ...state, width } : state;
+  const fault = typedFault(state);
+  if (fault) return { state, says: fault };
   if (typed[LENGTH] !== '' || typed[ANGLE] !== '')
-    return place(aim(wide, wide.at, scope, true), scope, false);
-  if (isTyping(state.typing)) return { state: { ...wide, typing: noTyping(FIELDS) } };
+    return place(aim(state, state.at, scope, true), scope, false);
+  if (isTyping(state.typing)) {
+    const { width, bendRadius } = typedShape(state);
+    if (width[0] !== width[1])
+      // a taper is that of a stretch: it waits for one
+      return state.keyed
+        ? place(state, scope, false)
+        : { state: { ...state, typing: { ...state.typing, field: LENGTH } } };
+    return { state: { ...state, width: width[0], bendRadius, typing: noTyping(FIELDS) } };
+  }
   return state.keyed ? place(state, scope, false) : finish(state, scope);
 }
 
@@ -185,9 +213,10 @@ function pointer(state: ChannelState, event: PlaceEvent, scope: Scope): Outcome<
   if (event.kind === 'move') return { state: aimed };
   if (event.kind === 'down') {
     const placed = place(aimed, scope, event.extend);
-    return { ...placed, state: { ...placed.state, pressed: placed.alter ? null : aimed.at } };
+    return { ...placed, state: { ...placed.state, pressed: placed.alter || placed.says ? null : event.at } };
   }
-  const dragged = state.pressed && distance(state.pressed, aimed.at) > 3 * scope.reach;
+  // by the hand itself: where a typed figure or a snap led the point says nothing
+  const dragged = state.pressed && distance(state.pressed, event.at) > 3 * scope.reach;
   if (!dragged) return { state: { ...state, pressed: null } };
   return place({ ...aimed, pressed: null }, scope, event.extend);
 }
@@ -198,7 +227,7 @@ function on(state: ChannelState, event: ToolEvent, scope: Scope): Outcome<Channe
       return { state: aim({ ...state, typing: typeInto(state.typing, event.text) }, state.at, scope, true) };
     case 'rub':
       if (isTyping(state.typing)) return { state: { ...state, typing: rubOut(state.typing) } };
-      return { state: { ...state, points: state.points.slice(0, -1) } };
+      return { state: { ...state, points: state.points.slice(0, -1), widths: state.widths.slice(0, -1) } };
     case 'again':
       return { state };
     case 'next':
@@ -234,43 +263,41 @@ function preview(state: ChannelState, scope: Scope): Preview {
     };
   const angle = (Math.atan2(state.at[1] - last[1], state.at[0] - last[0]) * 180) / Math.PI;
   const { field, texts } = state.typing;
-  const line = (name: string, figure: string, i: number, unit: string) => ({
+  const { width, bendRadius } = typedShape(state);
+  const line = (name: string, figure: string, i: number, fault: string) => ({
     name,
     figure,
     ...((field === i || texts[i] !== '') && { typing: texts[i]! }),
-    ...(texts[i] !== '' &&
-      unit !== '' &&
-      lengthFault(texts[i]!, unit) && { fault: lengthFault(texts[i]!, unit) }),
+    ...(fault && { fault }),
   });
+  const made = same(last, state.at)
+    ? channelsOf(state.points, state.widths, bendRadius, scope)
+    : channelsOf([...state.points, state.at], [...state.widths, width], bendRadius, scope);
   return {
-    parts:
-      path.length > 1
-        ? [
-            {
-              kind: 'channel',
-              value: {
-                id: '',
-                layer: scope.layer,
-                path: path as Channel['path'],
-                width: [state.width, state.width],
-                bendRadius: 0,
-              },
-            },
-          ]
-        : [],
+    parts: made.map((value) => ({ kind: 'channel', value }) as const),
     cursor: state.at,
     guide: state.guide,
     readout: [
-      line('length', lengthFigure(distance(last, state.at)), LENGTH, 'mm'),
+      line('length', lengthFigure(distance(last, state.at)), LENGTH, lengthFault(texts[LENGTH]!, 'mm')),
       line('angle', `${number(angle === -180 ? 180 : angle, 3)}°`, ANGLE, ''),
-      line('width', lengthFigure(state.width, { digits: 3 }), WIDTH, 'um'),
-      { name: 'in all', figure: lengthFigure(pathLength(path)) },
+      line('width', widthFigure(width), WIDTH, widthsFault(texts[WIDTH]!)),
+      ...(bendRadius > 0 || field === BENDS || texts[BENDS] !== ''
+        ? [line('bends', lengthFigure(bendRadius, { digits: 3 }), BENDS, bendsFault(texts[BENDS]!))]
+        : []),
+      { name: 'in all', figure: lengthFigure(pathLength(path, bendRadius)) },
     ],
     hint:
       state.by === 'free' || state.by === 'grid' || state.by === 'in line'
-        ? 'Enter ends the channel; Tab goes to angle and width.'
+        ? field === WIDTH
+          ? 'One width, or two for a taper: 200 to 100. It counts from here on.'
+          : 'Enter ends the channel; Tab goes to angle, width and bends.'
         : `On ${state.by === 'end' ? 'an end' : state.by === 'centreline' ? 'a channel' : `a ${state.by}`}: ends here.`,
   };
 }
+
+const widthFigure = ([from, to]: Widths): string =>
+  from === to
+    ? lengthFigure(from, { digits: 3 })
+    : `${lengthFigure(from, { digits: 3 })} to ${lengthFigure(to, { digits: 3 })}`;
 
 export const channelTool: Tool<ChannelState> = { name: 'channel', start, on, preview };

@@ -20,7 +20,17 @@ import {
   type ToolName,
   takenIds,
 } from './tool.ts';
-import { noTyping, readPlace, rubOut, type Typing, typeInto } from './typing.ts';
+import {
+  isTyping,
+  lengthFault,
+  nextField,
+  noTyping,
+  readPlace,
+  rubOut,
+  sizedCorner,
+  type Typing,
+  typeInto,
+} from './typing.ts';
 
 /** Makers are drawn as a box, corner to corner; what they are made of is then set on the card. */
 export interface BoxState {
@@ -52,6 +62,9 @@ function freshFamily(scope: Scope, stem: string): string {
   return freshId(scope.chip, stem, taken);
 }
 
+/** The other corner, under what was typed and where the hand points. */
+const farCorner = ({ from, at, typing }: BoxState): Xy => (from && sizedCorner(from, at, typing.texts)) ?? at;
+
 function boxTool(maker: BoxMaker): Tool<BoxState> {
   const start = (scope: Scope): BoxState => ({
     from: null,
@@ -79,26 +92,32 @@ function boxTool(maker: BoxMaker): Tool<BoxState> {
       goes: 'card',
     };
   };
-  const place = (state: BoxState, scope: Scope): Outcome<BoxState> =>
-    state.from
-      ? finish(state, scope)
-      : { state: { ...state, from: state.at, typing: noTyping(1), keyed: false } };
+  const place = (state: BoxState, scope: Scope): Outcome<BoxState> => {
+    if (!state.from) return { state: { ...state, from: state.at, typing: noTyping(2), keyed: false } };
+    const fault = state.typing.texts.map((text) => lengthFault(text, 'mm')).find(Boolean);
+    return fault ? { state, says: fault } : finish({ ...state, at: farCorner(state) }, scope);
+  };
   const on = (state: BoxState, event: ToolEvent, scope: Scope): Outcome<BoxState> => {
     switch (event.kind) {
       case 'type':
         return { state: { ...state, typing: typeInto(state.typing, event.text) } };
       case 'rub':
         return { state: { ...state, typing: rubOut(state.typing) } };
+      case 'next':
+        return { state: { ...state, typing: nextField(state.typing) } };
       case 'arrow': {
         const by = times(event.direction, scope.grid * (event.far ? 10 : 1));
         return { state: { ...state, at: whole(add(state.at, by)), keyed: true } };
       }
       case 'accept': {
-        const [text] = state.typing.texts;
-        if (text === '') return state.keyed ? place(state, scope) : { state };
-        const at = readPlace(text!);
-        if (!at) return { state, says: 'A corner takes two lengths, such as "10 mm, 3 mm".' };
-        return place({ ...state, at: whole(at), typing: noTyping(1) }, scope);
+        const { texts } = state.typing;
+        if (!isTyping(state.typing)) return state.keyed ? place(state, scope) : { state };
+        // the other corner can be typed as a place, too
+        const at = readPlace(texts[0]!);
+        if (at) return place({ ...state, at: whole(at), typing: noTyping(texts.length) }, scope);
+        return state.from
+          ? place(state, scope)
+          : { state, says: 'A corner takes two lengths, such as "10 mm, 3 mm".' };
       }
       case 'leave':
         return state.from ? { state: { ...start(scope), at: state.at } } : { state, goes: 'select' };
@@ -120,33 +139,47 @@ function boxTool(maker: BoxMaker): Tool<BoxState> {
           };
         }
         const dragged = state.pressed && state.from && distance(state.from, aimed.at) > 3 * scope.reach;
-        return dragged ? finish(aimed, scope) : { state: { ...state, pressed: false } };
+        return dragged ? place({ ...aimed, pressed: false }, scope) : { state: { ...state, pressed: false } };
       }
       default:
         return { state };
     }
   };
   const preview = (state: BoxState, scope: Scope): Preview => {
-    const typing = state.typing.texts[0] ? { typing: state.typing.texts[0] } : {};
+    const { texts, field } = state.typing;
+    const typing = (i: number) => {
+      const fault = state.from && !readPlace(texts[i] ?? '') ? lengthFault(texts[i] ?? '', 'mm') : '';
+      return field === i || texts[i] ? { typing: texts[i] ?? '', ...(fault && { fault }) } : {};
+    };
     if (!state.from)
       return {
         cursor: state.at,
         readout: [
-          { name: 'corner', figure: `${lengthFigure(state.at[0])}, ${lengthFigure(state.at[1])}`, ...typing },
+          {
+            name: 'corner',
+            figure: `${lengthFigure(state.at[0])}, ${lengthFigure(state.at[1])}`,
+            ...typing(0),
+          },
         ],
         hint: 'Click one corner of its box, or type a place such as 10 mm, 3 mm.',
       };
-    const box = boxBetween(state.from, state.at);
+    const corner = farCorner(state);
+    const box = boxBetween(state.from, corner);
     const making = maker.make('preview', box, scope);
     return {
       parts: 'made' in making ? partsOfMade(making.made) : [],
-      box: [state.from, state.at],
-      cursor: state.at,
+      box: [state.from, corner],
+      cursor: corner,
       readout: [
-        { name: 'width', figure: lengthFigure(box.right - box.left), ...typing },
-        { name: 'height', figure: lengthFigure(box.top - box.bottom) },
+        { name: 'width', figure: lengthFigure(box.right - box.left), ...typing(0) },
+        { name: 'height', figure: lengthFigure(box.top - box.bottom), ...typing(1) },
       ],
-      hint: 'refusal' in making ? making.refusal : 'Click the other corner; the card then sets the rest.',
+      hint:
+        'made' in making
+          ? 'Click the other corner; the card then sets the rest.'
+          : box.right === box.left && box.top === box.bottom
+            ? 'Click the other corner, or type its width and height.'
+            : making.refusal,
     };
   };
   return { name: maker.name, start, on, preview };

@@ -29,7 +29,7 @@ export type SelectState =
   | {
       readonly kind: 'moving';
       readonly from: Xy;
-      /** The place that snaps: a corner, a centre, or where the body was taken. */
+      /** The place that snaps: a corner or a centre; of a side, where it was taken. */
       readonly grip: Xy;
       readonly hit: Hit;
       readonly refs: readonly Ref[];
@@ -48,7 +48,8 @@ function grab(hit: Hit, refs: readonly Ref[], from: Xy, scope: Scope): SelectSta
     return { kind: 'moving', from, grip: placesOf(part)[hit.vertex]!, hit, refs, what: 'corner', by: [0, 0] };
   if (hit.segment >= 0 && alone)
     return { kind: 'moving', from, grip: hit.at, hit, refs, what: 'side', by: [0, 0] };
-  const grip = hit.kind === 'port' || hit.kind === 'via' ? hit.at : from;
+  // the nearest corner of what was taken: that it comes to lie on the grid is what is wanted
+  const grip = placesOf(part).reduce((best, p) => (distance(p, from) < distance(best, from) ? p : best));
   return { kind: 'moving', from, grip, hit, refs, what: 'parts', by: [0, 0] };
 }
 
@@ -76,16 +77,43 @@ function step(state: Extract<SelectState, { kind: 'moving' }>, event: PlaceEvent
     const u = direction(places[hit.segment]!, places[(hit.segment + 1) % places.length]!);
     const normal: Xy = [-u[1], u[0]];
     const along = dot(sub(raw, state.grip), normal);
-    const even = event.free || scope.grid === 0 ? along : Math.round(along / scope.grid) * scope.grid;
+    const level = u[0] === 0 || u[1] === 0;
+    const caught = level ? catchAt(add(state.grip, times(normal, along)), state, event, scope) : null;
+    const even = caught
+      ? dot(sub(caught, state.grip), normal)
+      : event.free || scope.grid === 0
+        ? along
+        : Math.round(along / scope.grid) * scope.grid;
     return { ...state, by: whole(times(normal, even)) };
   }
-  const snapped = snap(raw, scope.spatial, {
+  const from = state.what === 'corner' ? neighbours(state, scope) : state.grip;
+  return { ...state, by: whole(sub(catchAt(raw, state, event, scope, from), state.grip)) };
+}
+
+/** The place that the hand means while something is moved, which does not catch itself. */
+const catchAt = (
+  raw: Xy,
+  state: Extract<SelectState, { kind: 'moving' }>,
+  event: PlaceEvent,
+  scope: Scope,
+  from?: Xy | readonly Xy[],
+): Xy =>
+  snap(raw, scope.spatial, {
     reach: scope.reach,
     grid: scope.grid,
+    ...(from && { from }),
     without: new Set([...state.refs, ...joinedTo(state, scope)]),
     ...(event.free && { free: true }),
+  }).at;
+
+/** The corners beside the one at hand, which it can come to lie straight or at 45° with. */
+function neighbours({ hit }: Extract<SelectState, { kind: 'moving' }>, scope: Scope): Xy[] {
+  const places = placesOf(findPart(scope.chip, refTo(hit.kind, hit.id))!);
+  const round = hit.kind !== 'channel';
+  return [hit.vertex - 1, hit.vertex + 1].flatMap((i) => {
+    const p = places[round ? (i + places.length) % places.length : i];
+    return p ? [p] : [];
   });
-  return { ...state, by: whole(sub(snapped.at, state.grip)) };
 }
 
 /** Parts that share the place at hand: they come along and must not catch it. */

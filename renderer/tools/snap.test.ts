@@ -54,12 +54,11 @@ describe('snap', () => {
     expect(at(9_950, 60)).toMatchObject({ at: [10_000, 0], by: 'end' }));
   test('a centreline', () => expect(at(4_033, 90)).toMatchObject({ at: [4_033, 0], by: 'centreline' }));
   test('a port', () => expect(at(60, 19_950)).toMatchObject({ at: [0, 20_000], by: 'port' }));
-  test('45 degrees from the last point, in steps of the grid', () => {
+  test('45 degrees from the last point, in steps of the grid across and up', () => {
     const found = at(22_050, 21_900, { from: [20_000, 20_000] });
     expect(found.by).toBe('in line');
+    expect(found.at[0]).toBeCloseTo(22_000, 6);
     expect(found.at[0] - 20_000).toBeCloseTo(found.at[1] - 20_000, 6);
-    const steps = Math.hypot(found.at[0] - 20_000, found.at[1] - 20_000) / 100;
-    expect(steps).toBeCloseTo(Math.round(steps), 9);
   });
   test('straight on is exactly straight', () => {
     expect(at(25_060, 20_090, { from: [20_000, 20_000] }).at).toEqual([25_100, 20_000]);
@@ -111,5 +110,27 @@ describe('what lies under the pointer', () => {
     const empty = new Spatial(emptyChip());
     expect(empty.hit([0, 0], 100)).toBeNull();
     expect(empty.partsIn({ left: -1, right: 1, bottom: -1, top: 1 }, false)).toEqual([]);
+  });
+  test('as far from the end of a channel as that is from the next', () => {
+    const third = new Spatial({
+      ...chip,
+      channels: [
+        chip.channels[0]!,
+        { ...chip.channels[0]!, id: 'c', path: [[0, 3_000] as const, [10_000, 3_000] as const] },
+      ],
+    });
+    expect(snap([10_040, 6_060], third, { reach: 150, grid: 100 })).toMatchObject({
+      at: [10_000, 6_000],
+      by: 'equal spacing',
+    });
+  });
+  test('45 degrees from the nearer of two neighbours', () => {
+    const found = at(22_050, 21_900, {
+      from: [
+        [20_000, 20_000],
+        [0, 90_000],
+      ],
+    });
+    expect(found).toMatchObject({ by: 'in line', guide: [[20_000, 20_000], found.at] });
   });
 });

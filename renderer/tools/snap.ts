@@ -26,8 +26,8 @@ export interface SnapWishes {
   readonly reach: number;
   /** nm, 0 for none. */
   readonly grid: number;
-  /** The point the line comes from: 45 degree directions are offered from it. */
-  readonly from?: Xy;
+  /** The point the line comes from, or its neighbours: 45 degree directions are offered from each. */
+  readonly from?: Xy | readonly Xy[];
   /** True while the hand holds snapping off. */
   readonly free?: boolean;
   /** Parts that are being moved and must not catch themselves. */
@@ -50,17 +50,19 @@ export function snap(p: Xy, spatial: Spatial, wishes: SnapWishes): Snapped {
   const point = nearestPoint(p, chip, spatial, wishes);
   if (point) return point;
   const line = nearestLine(p, chip, spatial, wishes);
-  const ray = wishes.from ? nearestRay(p, wishes.from, wishes.reach) : null;
-  if (line && ray && wishes.from) {
-    const both = rayMeets(wishes.from, ray.unit, line.a, line.b);
+  const ray = nearestRay(p, origins(wishes.from), wishes.reach);
+  if (line && ray) {
+    const both = rayMeets(ray.from, ray.unit, line.a, line.b);
     if (both && distance(both, p) <= 2 * wishes.reach)
-      return { at: both, by: 'centreline', guide: [wishes.from, both] };
+      return { at: both, by: 'centreline', guide: [ray.from, both] };
   }
   if (line) return { at: line.at, by: 'centreline', guide: null };
-  if (ray && wishes.from) {
-    const along = wishes.grid > 0 ? Math.round(ray.along / wishes.grid) * wishes.grid : ray.along;
-    const at = add(wishes.from, times(ray.unit, along));
-    return { at, by: 'in line', guide: [wishes.from, at] };
+  if (ray) {
+    // a step of the grid across and up, so that slanting lines end on it too
+    const step = wishes.grid / Math.max(Math.abs(ray.unit[0]), Math.abs(ray.unit[1]));
+    const along = wishes.grid > 0 ? Math.round(ray.along / step) * step : ray.along;
+    const at = add(ray.from, times(ray.unit, along));
+    return { at, by: 'in line', guide: [ray.from, at] };
   }
   const even = equalSpacing(p, chip, wishes);
   if (even) return even;
@@ -122,26 +124,49 @@ function nearestLine(
   return best;
 }
 
-function nearestRay(p: Xy, from: Xy, reach: number): { readonly unit: Xy; readonly along: number } | null {
-  const d = sub(p, from);
-  let best: { unit: Xy; along: number; away: number } | null = null;
-  for (const ray of RAYS) {
-    const along = dot(d, ray);
-    const away = distance(d, times(ray, along));
-    if (away <= reach && (!best || away < best.away)) best = { unit: ray, along, away };
-  }
-  if (!best || best.along === 0) return null;
-  // a whole direction, so that straight lines come out exactly straight
-  return best.along < 0 ? { unit: times(best.unit, -1), along: -best.along } : best;
+const origins = (from: SnapWishes['from']): readonly Xy[] =>
+  from === undefined ? [] : isPlace(from) ? [from] : from;
+const isPlace = (from: Xy | readonly Xy[]): from is Xy => typeof from[0] === 'number';
+
+interface Ray {
+  readonly from: Xy;
+  readonly unit: Xy;
+  readonly along: number;
 }
 
-/** A place as far from one port or via as that is from the next, in a row or a column. */
+function nearestRay(p: Xy, origins: readonly Xy[], reach: number): Ray | null {
+  let best: (Ray & { readonly away: number }) | null = null;
+  for (const from of origins) {
+    const d = sub(p, from);
+    for (const unit of RAYS) {
+      const along = dot(d, unit);
+      const away = distance(d, times(unit, along));
+      if (along !== 0 && away <= reach && (!best || away < best.away)) best = { from, unit, along, away };
+    }
+  }
+  if (!best) return null;
+  // a whole direction, so that straight lines come out exactly straight
+  return best.along < 0 ? { ...best, unit: times(best.unit, -1), along: -best.along } : best;
+}
+
+/** Above this many channels their ends are no neighbours to keep a distance by. */
+const MOST_ENDS = 200;
+
+/** A place as far from one port, via or end of a channel as that is from the next, in a row or a column. */
 function equalSpacing(p: Xy, chip: Chip, wishes: SnapWishes): Snapped | null {
-  const places = [
-    ...chip.ports.filter((port) => !wishes.without?.has(`port:${port.id}`)),
-    ...chip.vias.filter((via) => !wishes.without?.has(`via:${via.id}`)),
+  const without = (ref: string): boolean => wishes.without?.has(ref) ?? false;
+  const holes = [
+    ...chip.ports.filter(({ id }) => !without(`port:${id}`)),
+    ...chip.vias.filter(({ id }) => !without(`via:${id}`)),
   ].map(({ at }) => at);
-  if (places.length < 2 || places.length > 400) return null;
+  const ends =
+    chip.channels.length > MOST_ENDS
+      ? []
+      : chip.channels
+          .filter(({ id }) => !without(`channel:${id}`))
+          .flatMap(({ path }) => [path[0]!, path.at(-1)!]);
+  const places = [...holes, ...ends];
+  if (places.length < 2 || holes.length > 400) return null;
   for (const axis of [0, 1] as const) {
     const row = places
       .filter((q) => Math.abs(q[1 - axis]! - p[1 - axis]!) <= wishes.reach)

@@ -74,12 +74,15 @@ export interface Scope {
 
 export interface Habits {
   readonly channelWidth: number;
+  /** Of the bends of channels. */
+  readonly bendRadius: number;
   readonly portDiameter: number;
   readonly viaDiameter: number;
 }
 
 export const FIRST_HABITS: Habits = {
   channelWidth: 200_000,
+  bendRadius: 0,
   portDiameter: 750_000,
   viaDiameter: 400_000,
 };
