@@ -30,10 +30,9 @@ export function Brought({ outcome: { chip, report, picture } }: { readonly outco
       ) : (
         <p className="soft small">There is too much of it for a small picture.</p>
       )}
-      <table className="plain-table">
+      <table className="plain-table figures became-table">
         <thead>
           <tr>
-            <th scope="col">layer</th>
             <th scope="col">channels</th>
             <th scope="col">chambers</th>
             <th scope="col">area off</th>
@@ -41,18 +40,22 @@ export function Brought({ outcome: { chip, report, picture } }: { readonly outco
             <th scope="col">furthest</th>
           </tr>
         </thead>
-        <tbody>
-          {report.chipLayers.map(({ id, channelsFromPaths, channelsFromRegions, chambers, deviation }) => (
-            <tr key={id}>
-              <th scope="row">{id}</th>
+        {report.chipLayers.map(({ id, channelsFromPaths, channelsFromRegions, chambers, deviation }) => (
+          <tbody key={id}>
+            <tr>
+              <th scope="rowgroup" colSpan={5}>
+                {id}
+              </th>
+            </tr>
+            <tr>
               <td>{channelsFromPaths + channelsFromRegions}</td>
               <td>{chambers}</td>
               <td>{deviation ? formatQuantity(deviation.share, 'share', { digits: 2 }) : '–'}</td>
               <td>{length(deviation?.meanOffset)}</td>
               <td>{length(deviation?.furthest)}</td>
             </tr>
-          ))}
-        </tbody>
+          </tbody>
+        ))}
       </table>
       <p>
         {report.ports === 1 ? '1 port' : `${report.ports} ports`},{' '}

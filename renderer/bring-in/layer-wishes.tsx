@@ -21,7 +21,7 @@ const WORDS: Readonly<Record<Role['kind'], string>> = {
 /** What a layer holds, leaving out what it has none of: "1 region, 3 bare lines". */
 function counts(regions: number, paths: number, lines: number): string {
   const of = (n: number, one: string, many: string): string[] =>
-    n === 0 ? [] : [`${n} ${n === 1 ? one : many}`];
+    n === 0 ? [] : [`${n.toLocaleString('en')} ${n === 1 ? one : many}`];
   const all = [
     ...of(regions, 'region', 'regions'),
     ...of(paths, 'path with a width', 'paths with a width'),

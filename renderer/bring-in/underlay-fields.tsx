@@ -4,7 +4,7 @@ import { QuantityField } from '../card/quantity-field.tsx';
 import { usePage } from '../page/context.tsx';
 import { toPlan } from '../sheet/camera.ts';
 import { useStore } from '../state/store.ts';
-import { readUnderlay, scaledBy, underlayOf } from './underlay.ts';
+import { readUnderlay, scaledBy, told, underlayOf } from './underlay.ts';
 
 type Xy = readonly [number, number];
 
@@ -58,7 +58,7 @@ export function UnderlayFields() {
   const length = (label: string, nm: number, apply: (nm: number) => string | null) => (
     <QuantityField
       label={label}
-      value={metres(nm)}
+      value={metres(underlay ? told(underlay, nm) : nm)}
       kind="length"
       unit="mm"
       onAccept={(value) =>

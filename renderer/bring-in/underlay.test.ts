@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { scaledBy, type Underlay } from './underlay.ts';
+import { scaledBy, told, type Underlay } from './underlay.ts';
 
 const UNDERLAY: Underlay = {
   name: 'photo',
@@ -44,4 +44,13 @@ test('one point, or no distance, is refused in words', () => {
       0,
     ),
   ).toMatch(/apart/);
+});
+
+test('lengths are told to the fifth figure of the width of the picture, and no finer than a nanometre', () => {
+  // 76.2 mm wide: to a micrometre
+  const wide = { ...UNDERLAY, scale: 762_000 };
+  expect(told(wide, -27_213_214)).toBe(-27_213_000);
+  expect(told(wide, 400)).toBe(0);
+  // 1 µm wide
+  expect(told(UNDERLAY, 123.4)).toBe(123);
 });

@@ -56,6 +56,12 @@ export async function readUnderlay(file: File, chip: { readonly width: number })
   return { name: file.name, image, x: 0, y: 0, scale: chip.width / image.naturalWidth, opacity: 0.5 };
 }
 
+/** A length on the plan, nm, to the fifth figure of the picture's width: finer than its pixels. */
+export function told({ image, scale }: Underlay, nm: number): number {
+  const finest = 10 ** (Math.floor(Math.log10(image.naturalWidth * scale)) - 4);
+  return finest >= 1 ? Math.round(nm / finest) * finest : Math.round(nm);
+}
+
 /** The picture scaled so that two places of the plan lie `distance` nm apart; the first stays where it is. */
 export function scaledBy(
   underlay: Underlay,

@@ -321,7 +321,8 @@ function writtenWords({ files, placed }: Report): string {
     files.length === 1
       ? `Written to ${where}${chips}`
       : `${counted(files.length, 'file')} written${chips}, the first to ${where}`;
-  return worst === 0
-    ? `${what}; read back, it is the drawing.`
+  if (worst === 0) return `${what}; read back, it is the drawing.`;
+  return worst < 0.01
+    ? `${what}; read back, it differs by less than a hundredth of what the chord error allows.`
     : `${what}; read back, it differs by ${figure(worst, 'share', { digits: 2, unit: '%' })} of what the chord error allows.`;
 }

@@ -21,9 +21,10 @@ const FORMATS = [
 /** A person's last choice, for this sitting. */
 let habit: { paper: NotePaper; format: NoteFormat } = { paper: 'A4', format: 'pdf' };
 
+/** Why it did not work: where, what, what to do. */
 export const troubleWords = (error: unknown): string =>
   error instanceof Problem
-    ? `${error.what} ${error.remedy}`
+    ? `${error.where && `${error.where.charAt(0).toUpperCase()}${error.where.slice(1)}: `}${error.what} ${error.remedy}`
     : error instanceof Error
       ? error.message
       : 'That did not work. Try it once more.';

@@ -2,6 +2,7 @@ import { mkdirSync } from 'node:fs';
 import { join, resolve } from 'node:path';
 import type { Page } from 'playwright-core';
 import { answered, sit } from '../page/desk.ts';
+import { BENCHES } from './benches.ts';
 
 /** Pictures of every screen and state, into the ignored folder `screens/`: `npm run screens [part of a name]`. */
 const FOLDER = resolve(import.meta.dirname, '../../screens');
@@ -228,6 +229,7 @@ const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
     await press(page, 'u');
     await page.locator('.main-svg').first().waitFor({ timeout: 60_000 });
   },
+  ...BENCHES,
 };
 
 const LOOKS = [
@@ -244,8 +246,9 @@ const LOOKS = [
 
 for (const [state, go] of Object.entries(STATES)) {
   if (wanted.length > 0 && !wanted.some((part) => state.includes(part))) continue;
-  const sitting = await sit();
+  let sitting: Awaited<ReturnType<typeof sit>> | null = null;
   try {
+    sitting = await sit();
     await go(sitting.page);
     for (const look of LOOKS) {
       await sitting.page.setViewportSize(look);
@@ -264,6 +267,6 @@ for (const [state, go] of Object.entries(STATES)) {
     console.error(`${state}: ${error instanceof Error ? error.message : error}`);
     process.exitCode = 1;
   } finally {
-    await sitting.end();
+    await sitting?.end();
   }
 }
