@@ -1,6 +1,6 @@
 import type { Limit } from '../../solver/chip/chip.ts';
 import type { Result } from '../../solver/chip/result.ts';
-import { sitePressures } from '../sheet/overlay.ts';
+import { sitePressures } from '../sheet/site-pressures.ts';
 import { bandOf } from '../words/band.ts';
 
 /** A stretch of a route, in the direction of its flow. */

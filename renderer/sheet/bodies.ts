@@ -77,10 +77,13 @@ export class Bodies {
   private readonly scene: Scene;
   private readonly shade: Int16Array;
   private groups: readonly Group[] | null = null;
+  private grounds: ReadonlyMap<number, Path2D> | null = null;
+  private readonly chamberShade: readonly number[];
 
-  constructor(scene: Scene, shade: Int16Array) {
+  constructor(scene: Scene, shade: Int16Array, chamberShade: readonly number[]) {
     this.scene = scene;
     this.shade = shade;
+    this.chamberShade = chamberShade;
   }
 
   /** Draws into a context in CSS px; `layers` are drawn in their order. */
@@ -102,10 +105,10 @@ export class Bodies {
     ctx.lineCap = 'butt';
     const colours = shades(style.scheme, style.ramp);
     const fluid = (shade: number): string => (shade < 0 ? style.palette.field : colours[shade]!);
-    const chambers = this.chambers();
+    this.grounds ??= this.chambers();
     ctx.lineWidth = (2 * WALL) / scale;
     ctx.strokeStyle = style.palette.ink;
-    ctx.stroke(chambers);
+    for (const path of this.grounds.values()) ctx.stroke(path);
     const near = spatial.channelsIn(inView(camera, size, 4));
     if (near.length > MANY) {
       this.groups ??= this.group();
@@ -123,21 +126,27 @@ export class Bodies {
             );
     }
     // over the ends of channels that reach into them: one cavity, one ground
-    ctx.fillStyle = style.palette.field;
-    ctx.fill(chambers);
+    for (const [shade, path] of this.grounds) {
+      ctx.fillStyle = fluid(shade);
+      ctx.fill(path);
+    }
     ctx.restore();
   }
 
-  private chambers(): Path2D {
-    const path = new Path2D();
-    for (const { outline } of this.scene.chip.chambers) {
+  /** Outlines of chambers by their shade. */
+  private chambers(): Map<number, Path2D> {
+    const paths = new Map<number, Path2D>();
+    this.scene.chip.chambers.forEach(({ outline }, nth) => {
+      const shade = this.chamberShade[nth]!;
+      const path = paths.get(shade) ?? new Path2D();
+      paths.set(shade, path);
       outline.forEach(([x, y], i) => {
         if (i === 0) path.moveTo(x, y);
         else path.lineTo(x, y);
       });
       path.closePath();
-    }
-    return path;
+    });
+    return paths;
   }
 
   private drawGroups(

@@ -14,18 +14,22 @@ const WIDTH = 188;
 export function Legend() {
   const { desk } = usePage();
   const overlay = useStore(desk.view, (view) => view.overlay);
-  const { chip: solvedChip, result } = useAnswer(desk);
+  const { chip: solvedChip, result, graph } = useAnswer(desk);
   const chip = useStore(desk.project)!.document.chip;
   const [, again] = useReducer((n: number) => n + 1, 0);
   useEffect(() => onTheme(again), []);
-  const now = useMemo(() => shown(overlay, solvedChip ?? chip, result), [overlay, solvedChip, result, chip]);
-  if (now.overlay === 'findings' || now.values.size === 0)
+  const now = useMemo(
+    () => shown(overlay, solvedChip ?? chip, result, graph),
+    [overlay, solvedChip, result, graph, chip],
+  );
+  const bare = now.values.size === 0 && now.chambers.size === 0;
+  if (now.overlay === 'findings' || bare)
     return (
       <p className="legend soft">
         {now.overlay === 'findings'
-          ? now.values.size === 0
-            ? 'No finding names a channel.'
-            : 'Channels that a finding names are filled.'
+          ? bare
+            ? 'No finding names a channel or a chamber.'
+            : 'Channels and chambers that a finding names are filled.'
           : now.overlay === 'off target'
             ? 'No target is given.'
             : 'Colour comes with the first answer.'}

@@ -1,7 +1,10 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { PieceResult, Result } from '../../solver/chip/result.ts';
 import { type Kind, metres } from '../../solver/chip/units.ts';
+import type { ShownGraph } from '../solving/shown-graph.ts';
 import { bandOf } from '../words/band.ts';
+import { chamberValues } from './chamber-values.ts';
+import { sitePressures } from './site-pressures.ts';
 
 /** What the colour of the fluid shows. */
 export const OVERLAYS = [
@@ -32,6 +35,8 @@ export interface Shown {
   readonly says: string;
   /** By channel id, in path order; null where there is no value. */
   readonly values: ReadonlyMap<string, readonly Span[]>;
+  /** By chamber id; those without a value are not there. Speed and shear are shown as fields, from near. */
+  readonly chambers: ReadonlyMap<string, number>;
   /** Solved junctions that have a value of their own: place (nm) and value. */
   readonly places: readonly { readonly at: readonly [number, number]; readonly value: number }[];
   /** Ends of the ramp. */
@@ -47,12 +52,12 @@ export interface Shown {
 const SAYS: Readonly<Record<Overlay, string>> = {
   share: 'share of the flow that enters the chip',
   speed: 'mean speed of the flow, marks in its direction',
-  pressure: 'pressure, over each channel',
+  pressure: 'pressure, over each channel and in chambers',
   'wall shear': 'peak wall shear in each channel and junction',
-  time: 'time a liquid stays in each channel',
+  time: 'time a liquid stays in each channel and chamber',
   'off target': 'how far each target is missed',
   depth: 'depth of the layer',
-  findings: 'channels that a finding names',
+  findings: 'channels and chambers that a finding names',
 };
 const KINDS: Readonly<Record<Overlay, Kind>> = {
   share: 'share',
@@ -64,32 +69,6 @@ const KINDS: Readonly<Record<Overlay, Kind>> = {
   depth: 'length',
   findings: 'number',
 };
-
-/** Mean pressure of a piece needs the pressures at its sites: found by walking out from the ports. */
-export function sitePressures(result: Result): ReadonlyMap<string, number> {
-  const at = new Map<string, number>();
-  for (const port of result.ports) at.set(`port:${port.id}`, port.pressure);
-  const edges = new Map<string, { readonly to: string; readonly drop: number }[]>();
-  const join = (from: string, to: string, drop: number): void => {
-    const list = edges.get(from) ?? [];
-    list.push({ to, drop });
-    edges.set(from, list);
-  };
-  for (const channel of result.channels)
-    for (const piece of channel.pieces) {
-      join(piece.from, piece.to, piece.pressureDrop);
-      join(piece.to, piece.from, -piece.pressureDrop);
-    }
-  const open = [...at.keys()];
-  for (let site = open.pop(); site !== undefined; site = open.pop()) {
-    for (const { to, drop } of edges.get(site) ?? []) {
-      if (at.has(to)) continue;
-      at.set(to, at.get(site)! - drop);
-      open.push(to);
-    }
-  }
-  return at;
-}
 
 function pieceValue(
   overlay: Overlay,
@@ -115,8 +94,13 @@ function pieceValue(
   }
 }
 
-/** What to colour, for a chip and its result (null while unsolved). */
-export function shown(overlay: Overlay, chip: Chip, result: Result | null): Shown {
+/** What to colour, for a chip, its result and its graph (null while unsolved). */
+export function shown(
+  overlay: Overlay,
+  chip: Chip,
+  result: Result | null,
+  graph: ShownGraph | null = null,
+): Shown {
   const values = new Map<string, Span[]>();
   if (overlay === 'depth') {
     const depths = new Map(chip.layers.map((layer) => [layer.id, layer.depth / 1e9]));
@@ -152,6 +136,7 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
         })),
       );
   }
+  const chambers = chamberValues(overlay, chip, result, graph);
   const limit = overlay === 'wall shear' ? shearLimit(chip) : null;
   const mark = overlay === 'wall shear' ? markOf(limit, chip) : null;
   const places = overlay === 'wall shear' ? junctionPeaks(result) : [];
@@ -160,11 +145,12 @@ export function shown(overlay: Overlay, chip: Chip, result: Result | null): Show
     kind: KINDS[overlay],
     says: SAYS[overlay],
     values,
+    chambers,
     places,
     ramp: overlay === 'off target' ? 'deviation' : 'amount',
     limit,
     mark,
-    ...range(overlay, values, places, mark?.at ?? null, chip),
+    ...range(overlay, values, chambers, places, mark?.at ?? null, chip),
   };
 }
 
@@ -231,6 +217,7 @@ function channelsAt(chip: Chip, id: string): string[] {
 function range(
   overlay: Overlay,
   values: Shown['values'],
+  chambers: Shown['chambers'],
   places: Shown['places'],
   limit: number | null,
   chip: Chip,
@@ -243,6 +230,10 @@ function range(
         low = Math.min(low, value);
         high = Math.max(high, value);
       }
+  for (const value of chambers.values()) {
+    low = Math.min(low, value);
+    high = Math.max(high, value);
+  }
   for (const { value } of places) high = Math.max(high, value);
   if (high < low) return { from: 0, to: 1 };
   if (overlay === 'off target') {

@@ -1,5 +1,5 @@
 import type { Chip } from '../../solver/chip/chip.ts';
-import { drawUnderlay, underlayOf } from '../bring-in/underlay.ts';
+import { drawPicked, drawUnderlay, underlayOf } from '../bring-in/underlay.ts';
 import { boxOfParts, findPart } from '../edits/parts.ts';
 import type { Xy } from '../geometry/vector.ts';
 import { motionAllowed, onMotion } from '../look/motion.ts';
@@ -20,7 +20,7 @@ import { type Shown, shown } from './overlay.ts';
 import { createPainter } from './painter.ts';
 import { drawPlaceWords } from './place-words.ts';
 import { Room } from './room.ts';
-import { makeScene, type Scene, shadesOf } from './scene.ts';
+import { chamberShades, makeScene, type Scene, shadesOf } from './scene.ts';
 import { Spatial } from './spatial.ts';
 import { type PlaceWords, type PortWords, placeWords, portWords } from './words.ts';
 
@@ -61,7 +61,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       old && old.chip === chip && old.key[1] === solved.graph
         ? old.scene
         : makeScene(chip, solved.graph, solved.graphChip);
-    const coloured = shown(overlay, solved.chip ?? chip, solved.result);
+    const coloured = shown(overlay, solved.chip ?? chip, solved.result, solved.graph);
     derived = {
       chip,
       key,
@@ -69,7 +69,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       spatial: live ? new Spatial(chip) : desk.spatial(),
       live: live !== null,
       shown: coloured,
-      bodies: new Bodies(scene, shadesOf(scene, coloured)),
+      bodies: new Bodies(scene, shadesOf(scene, coloured), chamberShades(chip, coloured)),
       directions: overlay === 'speed' ? directionsOf(solved.result) : new Map(),
       ports: portWords(chip, solved.result),
       places: placeWords(chip, solved.result, (where) => {
@@ -116,6 +116,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
           ramp: d.shown.ramp,
         });
         art.draw(ctx, d.shown, camera, size, look);
+        drawPicked(ctx, desk, camera, size, look);
       })(),
     flow: (ctx) =>
       frame((d, { camera, size }) => {

@@ -108,3 +108,10 @@ export function shadesOf(scene: Scene, overlay: Shown): Int16Array {
   });
   return out;
 }
+
+/** Shade of each chamber, in the order of the chip; -1 where it has no value. */
+export const chamberShades = (chip: Chip, overlay: Shown): readonly number[] =>
+  chip.chambers.map(({ id }) => {
+    const value = overlay.chambers.get(id);
+    return value === undefined ? -1 : Math.round(placeOn(overlay, value) * (SHADES - 1));
+  });
