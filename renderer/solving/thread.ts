@@ -21,7 +21,7 @@ import {
 import { verdicts } from '../verdict/verdicts.ts';
 import { showIn } from '../words/figure.ts';
 import { atHand } from './at-hand.ts';
-import { exercise } from './exercise.ts';
+import { exercising } from './exercise.ts';
 import { keeping } from './keep.ts';
 import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 import { shownGraph } from './shown-graph.ts';
@@ -44,8 +44,6 @@ const AWAITED = 250;
 const MOST_AWAITED = 2;
 /** ms that junction threads stand still for an edit, unless its answers are painted before. */
 const HELD = 150;
-/** ms without an order after which the thread may do what nobody asked for. */
-const IDLE = 1500;
 /** Bytes of solved junctions held beside those in use; the project keeps the others. */
 const MOST_KEPT = 96e6;
 /** Keys asked for at once, within what a request may carry. */
@@ -116,12 +114,16 @@ export function solvingThread(
   let took = 0;
   /** ms: when the last order came. */
   let ordered = 0;
+  const quiet = (): number => (drag || asked ? 0 : performance.now() - Math.max(ordered, ready));
   const unkept = keeping(
     (key, solution) => tell({ kind: 'keep', cell: { key, bytes: encodeSolution(solution) } }),
-    () => (drag || asked ? 0 : performance.now() - Math.max(ordered, ready)),
+    quiet,
     after,
   );
-  let exercised = false;
+  // without threads for junctions an answer waits for them, and how it is compiled does not matter
+  const exercise = hand
+    ? exercising(() => chip && { chip, options, cells: memory.cells }, quiet, later, after)
+    : null;
   /** Keys the project was asked for, and answers of it that are still to come. */
   const wanted = new Set<string>();
   let open = 0;
@@ -218,7 +220,7 @@ export function solvingThread(
       tellShort(chip, fresh);
       if (!unheld) handOn(fresh.waiting);
       unheld = false;
-      if (!stuck && fresh.waiting.length === 0) exerciseLater();
+      if (!stuck && fresh.waiting.length === 0) exercise?.later();
     }
     if (!dragDue || !drag) return;
     dragDue = false;
@@ -261,23 +263,6 @@ export function solvingThread(
     after(() => {
       if (awaiting === id) soon();
     }, AWAITED);
-  };
-  /** Once, when the first chip is answered and nothing is asked: the next answers come faster. */
-  const exerciseLater = (): void => {
-    if (exercised || !hand) return;
-    exercised = true;
-    let round: (() => boolean) | null = null;
-    const turn = (): void => {
-      const quiet = performance.now() - Math.max(ordered, ready);
-      if (!chip || drag || asked || quiet < IDLE) {
-        // edits that come meanwhile are exercise enough
-        if (!round) after(turn, IDLE);
-        return;
-      }
-      round ??= exercise(chip, options, memory.cells);
-      if (round()) later(turn);
-    };
-    after(turn, IDLE);
   };
   const work = (): void => {
     if (asked) return;

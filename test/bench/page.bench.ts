@@ -17,6 +17,8 @@ import type { BenchRow } from './row.ts';
  */
 
 const FRAME = 1000 / 60;
+/** ms between a chip's first whole answer and the first edit. */
+const LOOKED = 6000;
 
 /** A tree to 64 outlets: 127 channels. */
 function treeChip(): string {
@@ -143,6 +145,8 @@ async function answers(folder: string): Promise<BenchRow[]> {
   const { page } = sitting;
   try {
     await answered(page);
+    // somebody looks at the answers before they change anything
+    await page.waitForTimeout(LOOKED);
     const rows: BenchRow[] = [];
     for (const [what, tab, name, label] of [
       ['a drive', 'Ports', 'tree-in', 'Flow into the chip'],
@@ -190,7 +194,7 @@ async function dragging(folder: string): Promise<BenchRow[]> {
   try {
     await answered(page);
     // somebody looks at the chip before they take hold of it
-    await page.waitForTimeout(5000);
+    await page.waitForTimeout(LOOKED);
     const box = (await page.locator('.sheet-surface').first().boundingBox())!;
     // the junction lies in the middle of the chip, and that 18 px above the middle of the sheet
     const at = { x: box.x + box.width / 2, y: box.y + box.height / 2 - 18 };
