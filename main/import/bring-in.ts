@@ -103,7 +103,7 @@ export function fromDrawing(drawing: Drawing, file: string, settings: Settings, 
   const whole: Chip = { ...chip, ports, chambers: chip.chambers.filter(({ id }) => !pads.has(id)) };
   assumed.push(
     'A drawing has no drives: every port is open to the air (pressure 0) until it is given one.',
-    'The fluid is water at 25 degC until another is chosen; walls are upright and corners sharp.',
+    'The fluid is water at 25 °C until another is chosen; walls are upright and corners sharp.',
   );
   // Read back as any description is: what comes out is one by its own rules.
   const sound = readDescription(writeDescription(whole), whole.name);

@@ -6,8 +6,6 @@ import { toPlan } from '../sheet/camera.ts';
 import { useStore } from '../state/store.ts';
 import { readUnderlay, scaledBy, told, underlayOf } from './underlay.ts';
 
-type Xy = readonly [number, number];
-
 /** A picture of a chip under the sheet, to trace: scaled by two points, or by its width. */
 export function UnderlayFields() {
   const { desk } = usePage();
@@ -17,7 +15,7 @@ export function UnderlayFields() {
   const picker = useRef<HTMLInputElement>(null);
   const [says, setSays] = useState('');
   const [picking, setPicking] = useState(false);
-  const [points, setPoints] = useState<readonly Xy[]>([]);
+  const points = underlay?.picked ?? [];
 
   useEffect(() => {
     const surface = document.querySelector<HTMLElement>('.sheet-surface[role="application"]');
@@ -29,14 +27,15 @@ export function UnderlayFields() {
       event.preventDefault();
       const { left, top } = surface.getBoundingClientRect();
       const at = toPlan(camera, size, [event.clientX - left, event.clientY - top]);
-      setPoints((before) => (before.length < 2 ? [...before, at] : before));
+      const before = store.get();
+      if (before && before.picked.length < 2) store.set({ ...before, picked: [...before.picked, at] });
     };
     surface.addEventListener('pointerdown', press, { capture: true });
     return () => surface.removeEventListener('pointerdown', press, { capture: true });
-  }, [picking, desk]);
+  }, [picking, desk, store]);
   useEffect(() => {
     if (points.length === 2) setPicking(false);
-  }, [points]);
+  }, [points.length]);
 
   const take = async (file: File): Promise<void> => {
     const read = await readUnderlay(file, chip.outline);
@@ -52,7 +51,6 @@ export function UnderlayFields() {
     const before = store.get();
     if (before) URL.revokeObjectURL(before.image.src);
     store.set(null);
-    setPoints([]);
     setPicking(false);
   };
   const length = (label: string, nm: number, apply: (nm: number) => string | null) => (
@@ -73,7 +71,7 @@ export function UnderlayFields() {
     <section className="fields" aria-label="Picture to trace">
       <h3>Picture to trace</h3>
       <p className="soft small">
-        A PNG or JPEG under the channels. It is kept with this view, not in the chip.
+        A PNG or JPEG under the channels, for as long as this page is open: it is no part of the chip.
       </p>
       <button type="button" className="plain-button" onClick={() => picker.current?.click()}>
         {underlay ? 'Take another picture' : 'Take a picture'}
@@ -122,7 +120,7 @@ export function UnderlayFields() {
             className="plain-button"
             aria-pressed={picking}
             onClick={() => {
-              setPoints([]);
+              store.set({ ...underlay, picked: [] });
               setPicking(!picking);
             }}
           >
@@ -133,8 +131,7 @@ export function UnderlayFields() {
             length('They are apart by', apart, (nm) => {
               const scaled = scaledBy(underlay, [first, second], nm);
               if (typeof scaled === 'string') return scaled;
-              store.set(scaled);
-              setPoints([]);
+              store.set({ ...scaled, picked: [] });
               return null;
             })}
           {length('Its width', underlay.scale * underlay.image.naturalWidth, (nm) => {

@@ -8,6 +8,7 @@ const UNDERLAY: Underlay = {
   y: 2000,
   scale: 10,
   opacity: 0.5,
+  picked: [],
 };
 
 test('two points and their distance scale the picture about the first', () => {

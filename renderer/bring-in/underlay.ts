@@ -1,3 +1,5 @@
+import type { Xy } from '../geometry/vector.ts';
+import type { Palette } from '../look/tokens.ts';
 import { type Camera, type Size, toScreen } from '../sheet/camera.ts';
 import type { Desk } from '../state/desk.ts';
 import { createStore, type Store } from '../state/store.ts';
@@ -13,6 +15,8 @@ export interface Underlay {
   readonly scale: number;
   /** 0 to 1 */
   readonly opacity: number;
+  /** Places of the plan whose distance is to be given, nm: none, one or two. */
+  readonly picked: readonly Xy[];
 }
 
 const UNDERLAYS = new WeakMap<Desk, Store<Underlay | null>>();
@@ -24,6 +28,42 @@ export function underlayOf(desk: Desk): Store<Underlay | null> {
     UNDERLAYS.set(desk, store);
   }
   return store;
+}
+
+/** Half the arms of the cross on a place that was picked, px. */
+const ARM = 8;
+
+/** The places that were picked to scale the picture by, each a cross, and what lies between them. */
+export function drawPicked(
+  ctx: CanvasRenderingContext2D,
+  desk: Desk,
+  camera: Camera,
+  size: Size,
+  { ink, chip }: Palette,
+): void {
+  const at = (underlayOf(desk).get()?.picked ?? []).map((place) => toScreen(camera, size, place));
+  const draw = (colour: string, width: number): void => {
+    ctx.strokeStyle = colour;
+    ctx.lineWidth = width;
+    ctx.beginPath();
+    for (const [x, y] of at) {
+      ctx.moveTo(x - ARM, y);
+      ctx.lineTo(x + ARM, y);
+      ctx.moveTo(x, y - ARM);
+      ctx.lineTo(x, y + ARM);
+    }
+    const [first, second] = at;
+    if (first && second) {
+      ctx.moveTo(...first);
+      ctx.lineTo(...second);
+    }
+    ctx.stroke();
+  };
+  ctx.save();
+  // seen on a dark photograph as on a light one
+  draw(chip, 4);
+  draw(ink, 1.5);
+  ctx.restore();
 }
 
 export function drawUnderlay(ctx: CanvasRenderingContext2D, desk: Desk, camera: Camera, size: Size): void {
@@ -53,7 +93,8 @@ export async function readUnderlay(file: File, chip: { readonly width: number })
     URL.revokeObjectURL(image.src);
     return 'The picture cannot be read; save it once more as PNG or JPEG.';
   }
-  return { name: file.name, image, x: 0, y: 0, scale: chip.width / image.naturalWidth, opacity: 0.5 };
+  const scale = chip.width / image.naturalWidth;
+  return { name: file.name, image, x: 0, y: 0, scale, opacity: 0.5, picked: [] };
 }
 
 /** A length on the plan, nm, to the fifth figure of the picture's width: finer than its pixels. */

@@ -1,4 +1,5 @@
 import { unitSize } from '../../../solver/chip/units.ts';
+import { unitInPrint } from '../../../solver/chip/units-format.ts';
 import { Problem } from '../../../solver/problem/problem.ts';
 import { type Affine, compose, moved, movedTrack, SAME, scaling, shift, turning } from '../affine.ts';
 import { chainLines } from '../chain.ts';
@@ -54,7 +55,7 @@ export function readDxf(bytes: Uint8Array, work: Work): Drawing {
     unit: name === undefined ? null : unitSize(name),
     unitSays:
       name !== undefined
-        ? `$INSUNITS ${listed.insunits} is ${name}.`
+        ? `$INSUNITS ${listed.insunits} is ${unitInPrint(name)}.`
         : listed.insunits === null
           ? 'The file has no $INSUNITS.'
           : `$INSUNITS ${listed.insunits} names no unit.`,

@@ -1,3 +1,4 @@
+import { inUnit } from '../../../solver/chip/units.ts';
 import { Problem } from '../../../solver/problem/problem.ts';
 import { type Affine, compose, growth, moved, SAME, scaling, shift, turning } from '../affine.ts';
 import { type Drawing, evenWidths, extend, FILLED, Gathering } from '../drawing.ts';
@@ -70,7 +71,7 @@ export function readGds(bytes: Uint8Array, work: Work): Drawing {
   return gathering.done({
     format: 'GDSII',
     unit: library.unit,
-    unitSays: `The database unit is ${library.unit.toPrecision(6)} m.`,
+    unitSays: `The database unit is ${Number(inUnit(library.unit, 'nm').toPrecision(6))} nm.`,
     page: null,
   });
 }
