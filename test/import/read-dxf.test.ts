@@ -214,6 +214,82 @@ test('a hatch gives its boundaries, holes by even and odd', () => {
   ]);
 });
 
+test('a hatch bounded by a spline, with and without the points that it was fitted to', () => {
+  // The parabola from (2, 1) over (1, 3) to (0, 1) stands 2/3 of 2 x 1 above the square below it.
+  const head = [0, 'HATCH', 8, 'H', 10, 0, 20, 0, 30, 0, 2, 'SOLID', 70, 1, 71, 0, 91, 1, 92, 1, 93, 4];
+  const lines = [
+    ...[
+      72, 1, 10, 0, 20, 1, 11, 0, 21, 0, 72, 1, 10, 0, 20, 0, 11, 2, 21, 0, 72, 1, 10, 2, 20, 0, 11, 2, 21, 1,
+    ],
+    ...[72, 4, 94, 2, 73, 0, 74, 0, 95, 6, 96, 3, 40, 0, 40, 0, 40, 0, 40, 1, 40, 1, 40, 1],
+    ...[10, 2, 20, 1, 10, 1, 20, 3, 10, 0, 20, 1],
+  ];
+  for (const rest of [
+    [97, 1, 330, 'A1', 75, 1, 76, 1],
+    [97, 0, 75, 1, 76, 1],
+    [97, 2, 11, 2, 21, 1, 11, 0, 21, 1, 12, -1, 22, 2, 13, -1, 23, -2, 97, 0, 75, 1, 76, 1],
+  ]) {
+    const drawing = drawingOf(dxf([...head, ...lines, ...rest]));
+    expect(drawing.notUnderstood).toEqual([]);
+    expect(Math.abs(area(layerOf(drawing, 'H').regions[0].loops[0]))).toBeCloseTo(2 + 4 / 3, 4);
+  }
+});
+
+test('an axis that points down mirrors what is told in axes of its own, and only the turn of an ellipse', () => {
+  const down = [210, 0, 220, 0, 230, -1];
+  const drawing = drawingOf(
+    dxf([
+      ...[0, 'ELLIPSE', 8, 'E', 10, 0, 20, 0, 11, 4, 21, 0, ...down, 40, 0.5, 41, 0, 42, Math.PI / 2],
+      ...[0, 'SPLINE', 8, 'S', ...down, 70, 8, 71, 1, 40, 0, 40, 0, 40, 1, 40, 1, 10, 1, 20, 2, 10, 3, 20, 5],
+      ...[0, 'CIRCLE', 8, 'C', 10, 5, 20, 5, 40, 1, ...down],
+      ...[0, 'ELLIPSE', 8, 'E', 10, 0, 20, 0, 11, 4, 21, 0, 210, 1, 220, 0, 230, 0, 40, 0.5],
+    ]),
+  );
+  // From the half axis (4, 0) clockwise, as it is seen from above, to (0, -2).
+  const { vertices } = layerOf(drawing, 'E').lines[0];
+  expect(rounded(vertices.slice(-3))).toEqual([0, -2, 0]);
+  expect(rounded(layerOf(drawing, 'S').lines[0].vertices.slice(0, 3))).toEqual([1, 2, 0]);
+  expect(rounded(layerOf(drawing, 'C').regions[0].loops[0])).toEqual([-4, 5, -1, -6, 5, -1]);
+  expect(drawing.notUnderstood.map(({ what }) => what)).toEqual(['ELLIPSE tilted out of the plan']);
+});
+
+test('what the file does not show is listed; what belongs to an entity is left out with it', () => {
+  const drawing = drawingOf(
+    dxf(
+      [
+        ...[0, 'CIRCLE', 8, 'A', 60, 1, 10, 0, 20, 0, 40, 1],
+        ...[0, 'POLYLINE', 8, 'A', 60, 1, 66, 1, 0, 'VERTEX', 8, 'A', 10, 0, 20, 0],
+        ...[0, 'VERTEX', 8, 'A', 10, 1, 20, 0, 0, 'SEQEND', 8, 'A'],
+        ...[0, 'INSERT', 8, 'A', 66, 1, 2, 'B', 10, 0, 20, 0, 0, 'ATTRIB', 8, 'A', 1, 'name'],
+        ...[0, 'SEQEND', 8, 'A', 0, 'CIRCLE', 8, 'frozen', 10, 0, 20, 0, 40, 1],
+      ],
+      [0, 'BLOCK', 2, 'B', 10, 0, 20, 0, 0, 'CIRCLE', 8, '0', 10, 0, 20, 0, 40, 1, 0, 'ENDBLK'],
+    ).replace(
+      '0\nSECTION\n2\nBLOCKS',
+      `${[0, 'SECTION', 2, 'TABLES', 0, 'TABLE', 2, 'LAYER', 70, 2, 0, 'LAYER', 2, 'A', 70, 0, 62, 3, 0, 'LAYER', 2, 'Frozen', 70, 1, 62, 7, 0, 'ENDTAB', 0, 'ENDSEC'].join('\n')}\n0\nSECTION\n2\nBLOCKS`,
+    ),
+  );
+  expect(drawing.notUnderstood.map(({ what, count }) => `${count} ${what}`)).toEqual([
+    '1 CIRCLE that the file does not show',
+    '1 POLYLINE that the file does not show',
+    '1 ATTRIB',
+  ]);
+  expect(layerOf(drawing, 'A').regions).toHaveLength(1);
+  expect(drawing.assumed).toEqual([
+    'The layer "frozen" is off or frozen in the file; it was taken like the others.',
+  ]);
+});
+
+test('names of layers: escapes of signs, and the code page that the header names', () => {
+  const circle = (layer: string) => dxf([0, 'CIRCLE', 8, layer, 10, 0, 20, 0, 40, 1]);
+  expect(drawingOf(circle('\\U+03C4 \\U+5C64')).layers[0].name).toBe('τ 層');
+  // Windows 1253: 0xF4 is the Greek letter tau
+  const page = circle('?').replace('$INSUNITS', '$DWGCODEPAGE\n3\nANSI_1253\n9\n$INSUNITS');
+  const bytes = new TextEncoder().encode(page);
+  bytes[bytes.indexOf(63)] = 0xf4;
+  expect(drawingOf(bytes).layers[0].name).toBe('τ');
+});
+
 test('what is not understood is listed with its line, nothing is dropped silently', () => {
   const drawing = drawingOf(
     dxf([0, 'TEXT', 8, 'T', 1, 'a', 0, 'TEXT', 8, 'T', 1, 'b', 0, 'INSERT', 8, 'A', 2, 'NO', 10, 0, 20, 0]),

@@ -31,6 +31,8 @@ interface Block {
 interface Listed {
   readonly entities: Entity[];
   readonly blocks: Map<string, Block>;
+  /** Layers that the file does not show: off, or frozen. */
+  readonly unseen: Set<string>;
   insunits: number | null;
 }
 
@@ -48,7 +50,14 @@ export function readDxf(bytes: Uint8Array, work: Work): Drawing {
   const gathering = new Gathering(work);
   const placer = new Placer(gathering, listed.blocks);
   placer.place(listed.entities, SAME, '0', []);
-  for (const layer of gathering.layers.values()) chainLines(layer, gathering);
+  for (const layer of gathering.layers.values()) {
+    chainLines(layer, gathering);
+    if (listed.unseen.has(layer.name.toUpperCase())) {
+      gathering.assume(
+        `The layer "${layer.name}" is off or frozen in the file; it was taken like the others.`,
+      );
+    }
+  }
   const name = listed.insunits === null ? undefined : UNITS[listed.insunits];
   return gathering.done({
     format: 'DXF',
@@ -63,17 +72,34 @@ export function readDxf(bytes: Uint8Array, work: Work): Drawing {
   });
 }
 
-/** UTF-8 where the bytes are that, else one byte per character. */
+/** Code pages beyond the Windows ones of one byte, as the encoding standard names them. */
+const WIDE_PAGES: Readonly<Record<string, string>> = {
+  '932': 'shift_jis',
+  '936': 'gbk',
+  '949': 'euc-kr',
+  '950': 'big5',
+};
+
+/** UTF-8 where the bytes are that, else by the code page that the header names. */
 function decodeText(bytes: Uint8Array): string {
   try {
     return new TextDecoder('utf-8', { fatal: true }).decode(bytes);
   } catch {
-    return new TextDecoder('latin1').decode(bytes);
+    const head = new TextDecoder('latin1').decode(bytes.subarray(0, 20_000));
+    const page = /\$DWGCODEPAGE\s+3\s+ANSI_(\d{3,4})\s/i.exec(head)?.[1] ?? '';
+    const known = WIDE_PAGES[page] ?? (/^125[0-8]$/.test(page) ? `windows-${page}` : 'latin1');
+    return new TextDecoder(known).decode(bytes);
   }
 }
 
+/** A name with the escapes that stand for signs beyond the file's code page. */
+const named = (text: string): string =>
+  text.replaceAll(/\\U\+([0-9a-f]{4})/gi, (_, code: string) =>
+    String.fromCharCode(Number.parseInt(code, 16)),
+  );
+
 function listEntities(pairs: Pairs, work: Work): Listed {
-  const listed: Listed = { entities: [], blocks: new Map(), insunits: null };
+  const listed: Listed = { entities: [], blocks: new Map(), unseen: new Set(), insunits: null };
   let sections = 0;
   let more = pairs.next();
   while (more) {
@@ -92,6 +118,7 @@ function listEntities(pairs: Pairs, work: Work): Listed {
     sections += 1;
     const name = pairs.value.trim();
     if (name === 'HEADER') more = readHeader(pairs, listed);
+    else if (name === 'TABLES') more = readTables(pairs, listed, work);
     else if (name === 'BLOCKS') more = readBlocks(pairs, listed, work);
     else if (name === 'ENTITIES') {
       more = pairs.next();
@@ -135,6 +162,27 @@ function readHeader(pairs: Pairs, listed: Listed): boolean {
   return false;
 }
 
+/** Which layers the file does not show; nothing else of the tables bears on a shape. */
+function readTables(pairs: Pairs, listed: Listed, work: Work): boolean {
+  let more = pairs.next();
+  while (more) {
+    const mark = pairs.code === 0 ? pairs.value.trim() : '';
+    if (mark === 'ENDSEC') return true;
+    if (mark !== 'LAYER') {
+      more = pairs.next();
+      continue;
+    }
+    const read = readEntity(pairs);
+    more = read.more;
+    const { entity } = read;
+    work.group(entity.count, `line ${entity.line}`);
+    // a colour below zero is one that is switched off, the flag 1 is frozen
+    const unseen = numberOf(entity, 62, 7) < 0 || (numberOf(entity, 70, 0) & 1) === 1;
+    if (unseen) listed.unseen.add(named(textOf(entity, 2) ?? '').toUpperCase());
+  }
+  return false;
+}
+
 function readBlocks(pairs: Pairs, listed: Listed, work: Work): boolean {
   let open: Block | null = null;
   let more = pairs.next();
@@ -155,6 +203,18 @@ function readBlocks(pairs: Pairs, listed: Listed, work: Work): boolean {
   return false;
 }
 
+/** What belongs to the entity at `i`: the vertices of a POLYLINE, the attributes of an INSERT, and their end. */
+function partsOf(entities: readonly Entity[], i: number): Entity[] {
+  const { type } = entities[i];
+  const part = type === 'POLYLINE' ? 'VERTEX' : type === 'INSERT' ? 'ATTRIB' : '';
+  const parts: Entity[] = [];
+  if (part === '') return parts;
+  let k = i + 1;
+  for (; k < entities.length && entities[k].type === part; k += 1) parts.push(entities[k]);
+  if (k < entities.length && entities[k].type === 'SEQEND') parts.push(entities[k]);
+  return parts;
+}
+
 /** Puts entities where they belong, references with all they hold. */
 class Placer {
   readonly #to: Gathering;
@@ -172,33 +232,39 @@ class Placer {
       const where = `line ${entity.line}`;
       if (stack.length > 0) this.#to.work.entity(where);
       else this.#to.work.at(0.6 + (0.4 * i) / entities.length);
+      const parts = partsOf(entities, i);
+      i += parts.length;
+      if (parts.at(-1)?.type === 'SEQEND') parts.pop();
+      if (entity.type === 'INSERT') for (const part of parts) this.#to.note(part.type, `line ${part.line}`);
       if (textOf(entity, 67) === '1') {
         this.#to.note(`${entity.type} on paper space`, where);
         continue;
       }
+      if (textOf(entity, 60) === '1') {
+        this.#to.note(`${entity.type} that the file does not show`, where);
+        continue;
+      }
       // What lies on layer 0 of a block takes the layer that the block is placed on.
-      const own = textOf(entity, 8) ?? '0';
+      const own = named(textOf(entity, 8) ?? '0');
       const layer = own === '0' && stack.length > 0 ? inherited : own;
       const ocs = this.#ocs(entity, where);
       if (!ocs) continue;
       const at = ocs === SAME ? by : compose(by, ocs);
       if (entity.type === 'INSERT') this.#insert(entity, at, layer, stack);
-      else if (entity.type === 'POLYLINE') {
-        let end = i + 1;
-        while (end < entities.length && entities[end].type === 'VERTEX') end += 1;
-        this.#draw(this.#polyline(entity, entities.slice(i + 1, end)), at, layer, where);
-        i = end < entities.length && entities[end].type === 'SEQEND' ? end : end - 1;
-      } else {
-        this.#draw(this.#shape(entity), at, layer, where, entity.type);
-      }
+      else if (entity.type === 'POLYLINE') this.#draw(this.#polyline(entity, parts), at, layer, where);
+      else this.#draw(this.#shape(entity), at, layer, where, entity.type);
     }
   }
 
   /** The entity's own axes in the plan, null where they do not lie in it. */
   #ocs(entity: Entity, where: string): Affine | null {
-    if (entity.find(230) < 0 || entity.type === 'LINE' || entity.type === 'ELLIPSE') return SAME;
+    if (entity.find(230) < 0 || entity.type === 'LINE') return SAME;
     const [x, y, z] = [numberOf(entity, 210, 0), numberOf(entity, 220, 0), numberOf(entity, 230, 1)];
-    if (Math.abs(x) < 1e-9 && Math.abs(y) < 1e-9) return z < 0 ? scaling(-1, 1) : SAME;
+    if (Math.abs(x) < 1e-9 && Math.abs(y) < 1e-9) {
+      // the points of these are those of the plan whatever their axis
+      const plain = entity.type === 'ELLIPSE' || entity.type === 'SPLINE';
+      return z < 0 && !plain ? scaling(-1, 1) : SAME;
+    }
     this.#to.note(`${entity.type} tilted out of the plan`, where);
     return null;
   }

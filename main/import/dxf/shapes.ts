@@ -64,11 +64,12 @@ export function arcVertices(x: number, y: number, radius: number, from: number, 
 
 function ellipse(entity: Entity): Drawn {
   const [ax, ay] = [needed(entity, 11), needed(entity, 21)];
-  const ratio = needed(entity, 40);
+  // seen from below the other half axis lies on the other side
+  const ratio = Math.sign(numberOf(entity, 230, 1)) * needed(entity, 40);
   const from = numberOf(entity, 41, 0);
   let to = numberOf(entity, 42, 2 * Math.PI);
   const size = Math.hypot(ax, ay);
-  if (!(size > 0 && ratio > 0 && Number.isFinite(to - from))) return { not: 'ellipses of no size' };
+  if (!(size > 0 && ratio !== 0 && Number.isFinite(to - from))) return { not: 'ellipses of no size' };
   to -= Math.floor((to - from) / (2 * Math.PI)) * 2 * Math.PI;
   if (to <= from + 1e-9) to += 2 * Math.PI;
   const whole = to - from > 2 * Math.PI - 1e-6;
