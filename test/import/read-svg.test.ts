@@ -22,7 +22,7 @@ test('page and box say the unit: 20 mm for 2000 is 10 µm', () => {
 test('an inch is 25.4 mm, a point its 72nd; pixels and percentages say nothing of the chip', () => {
   const unit = (head: string) => drawingOf(svg('<circle r="1"/>', head)).unit;
   expect(unit('width="1in" viewBox="0 0 1000 1000"')).toBeCloseTo(25.4e-6, 15);
-  expect(unit('width="72pt" height="72pt"')).toBeCloseTo(0.0254 / 72, 15);
+  expect(unit('width="72pt" height="72pt" viewBox="0 0 1000 1000"')).toBeCloseTo(25.4e-6, 15);
   expect(unit('width="300px" height="200px"')).toBeNull();
   expect(unit('width="100%" viewBox="0 0 10 10"')).toBeNull();
 });
@@ -31,6 +31,58 @@ test('a page fitted to a box of other proportions takes the smaller scale', () =
   expect(
     drawingOf(svg('<circle r="1"/>', 'width="20mm" height="10mm" viewBox="0 0 1000 1000"')).unit,
   ).toBeCloseTo(1e-5, 15);
+});
+
+test('without a box a user unit is a pixel, 1/96 in by CSS, whatever the page is told in', () => {
+  const drawing = drawingOf(svg('<rect width="96" height="1"/>', 'width="2in" height="1in"'));
+  expect(drawing.unit).toBeCloseTo(0.0254 / 96, 15);
+  expect(drawing.page).toEqual({ width: 192, height: 96 });
+  expect(drawing.unitSays).toMatch(/2in by 1in; it has no viewBox.* 1\/96 in/);
+});
+
+test('lengths in units within a drawing are pixels of 1/96 in; those relative to the page are listed', () => {
+  const drawing = drawingOf(
+    svg(
+      '<rect width="1in" height="2.54cm"/><line x2="12pt" stroke="#000" stroke-width="1pc"/><rect width="50%" height="1"/>',
+    ),
+  );
+  expect(rounded(drawing.layers[0].regions[0].loops[0])).toEqual([
+    0, 1000, 0, 96, 1000, 0, 96, 904, 0, 0, 904, 0,
+  ]);
+  const [track] = drawing.layers[0].tracks;
+  expect([...rounded(track.vertices), ...track.widths]).toEqual([0, 1000, 0, 16, 1000, 0, 16, 16]);
+  expect(drawing.notUnderstood.map(({ what }) => what)).toEqual(['shapes with lengths in other units']);
+});
+
+test('symbols and inner pages are fitted to their boxes, by the smaller scale in the middle unless told else', () => {
+  const symbol = (how: string, use: string) =>
+    loops(
+      `<defs><symbol id="s" viewBox="10 0 10 10" ${how}><path d="M10 0h10v10z"/></symbol></defs><use href="#s" ${use}/>`,
+    );
+  // 10 by 10 into 40 by 20: scale 2, 10 to the right; then y turned up
+  expect(symbol('', 'x="5" y="100" width="40" height="20"')).toEqual([[15, 900, 0, 35, 900, 0, 35, 880, 0]]);
+  expect(symbol('preserveAspectRatio="xMaxYMin meet"', 'width="40" height="20"')).toEqual([
+    [20, 1000, 0, 40, 1000, 0, 40, 980, 0],
+  ]);
+  expect(symbol('preserveAspectRatio="none"', 'width="40" height="20"')).toEqual([
+    [0, 1000, 0, 40, 1000, 0, 40, 980, 0],
+  ]);
+  expect(
+    loops('<svg x="1" y="2" width="20" height="20" viewBox="0 0 10 10"><path d="M0 0h10v10z"/></svg>'),
+  ).toEqual([[1, 998, 0, 21, 998, 0, 21, 978, 0]]);
+});
+
+test('dashes, round corners and strokes that do not scale are told', () => {
+  const drawing = drawingOf(
+    svg(
+      '<g stroke="#000" fill="none"><path d="M0 0h9v9" stroke-dasharray="2 1"/><path d="M0 0h9v9" stroke-linejoin="round"/><path d="M0 0h9" vector-effect="non-scaling-stroke"/><path d="M0 0h9" stroke-dasharray="0"/></g>',
+    ),
+  );
+  expect(drawing.notUnderstood.map(({ what, count }) => `${count} ${what}`)).toEqual([
+    '1 dashed strokes (taken without gaps)',
+    '1 strokes that do not scale (taken as scaled)',
+  ]);
+  expect(drawing.assumed.join()).toMatch(/mitred/);
 });
 
 test('path data: relative and absolute, closed and reopened, arcs kept true', () => {

@@ -1,9 +1,9 @@
-import { unitSize } from '../../../solver/chip/units.ts';
 import { Problem } from '../../../solver/problem/problem.ts';
 import { type Affine, compose, growth, isSimilar, moved, SAME, shift } from '../affine.ts';
 import { ellipsePoints } from '../curves.ts';
 import { circle, type Drawing, evenWidths, extend, Gathering } from '../drawing.ts';
 import { LIMITS, type Work } from '../work.ts';
+import { fitted, lengthOf, pixelsOf } from './length.ts';
 import { type Subpath, subpaths } from './path.ts';
 import { INITIAL, paintKind, readSheet, type Sheet, type Style, styleOf } from './style.ts';
 import { readTransform } from './transform.ts';
@@ -39,14 +39,15 @@ export function readSvg(bytes: Uint8Array, work: Work): Drawing {
   const boxed = box.length === 4 && box.every(Number.isFinite) && box[2] > 0 && box[3] > 0;
   const width = lengthOf(root.attributes.width);
   const height = lengthOf(root.attributes.height);
-  const [x, y, w, h] = boxed ? box : [0, 0, width?.value ?? 0, height?.value ?? 0];
+  // Without a box a user unit is a pixel, whatever unit the size of the page is told in.
+  const [x, y, w, h] = boxed ? box : [0, 0, width?.pixels ?? 0, height?.pixels ?? 0];
   const said = width ?? height;
   let unit: number | null = null;
-  if (said?.metres) {
+  if (width?.metres || height?.metres) {
     // The page is fitted to the box by the smaller of the two scales, as the standard has it.
     const scales = [
-      ...(width?.metres ? [(width.value * width.metres) / (boxed ? w : width.value)] : []),
-      ...(height?.metres ? [(height.value * height.metres) / (boxed ? h : height.value)] : []),
+      ...(width?.metres ? [width.metres / (boxed ? w : width.pixels)] : []),
+      ...(height?.metres ? [height.metres / (boxed ? h : height.pixels)] : []),
     ];
     unit = Math.min(...scales);
   }
@@ -57,21 +58,10 @@ export function readSvg(bytes: Uint8Array, work: Work): Drawing {
     format: 'SVG',
     unit: unit !== null && unit > 0 && Number.isFinite(unit) ? unit : null,
     unitSays: said?.metres
-      ? `The page is ${root.attributes.width ?? '?'} by ${root.attributes.height ?? '?'}.`
+      ? `The page is ${root.attributes.width ?? '?'} by ${root.attributes.height ?? '?'}${boxed ? '' : '; it has no viewBox, so that a unit is a pixel: 1/96 in'}.`
       : 'The page has no size in a unit of length.',
     page: w > 0 && h > 0 ? { width: w, height: h } : null,
   });
-}
-
-/** A length such as "75mm"; `metres` is 0 for pixels and bare numbers, which say nothing of the chip. */
-function lengthOf(text: string | undefined): { value: number; metres: number } | null {
-  const match = /^\s*([+-]?[\d.]+(?:e[+-]?\d+)?)\s*(mm|cm|in|pt|pc|um|µm|m|px|)\s*$/i.exec(text ?? '');
-  const value = Number(match?.[1]);
-  if (!match || !(value > 0)) return null;
-  const name = match[2].toLowerCase();
-  const inch = unitSize('in');
-  const known: Readonly<Record<string, number>> = { pt: inch / 72, pc: inch / 6, px: 0, '': 0 };
-  return { value, metres: known[name] ?? unitSize(name.replace('µ', 'u')) };
 }
 
 class Walk {
@@ -131,7 +121,7 @@ class Walk {
     else if (SHAPES.has(name)) this.#shape(element, place, where);
     else if (HOLDERS.has(name)) {
       const label = attributes['inkscape:label'] ?? attributes.id;
-      const inner = name === 'svg' ? this.#viewport(element, place) : place.by;
+      const inner = name === 'svg' ? this.#viewport(element, place, attributes) : place.by;
       this.children(element, {
         ...place,
         by: inner,
@@ -140,11 +130,15 @@ class Walk {
     } else this.to.note(`<${name.slice(0, LIMITS.name)}>`, where);
   }
 
-  /** An inner page: only moved; one that scales is listed. */
-  #viewport(element: Element, place: Place): Affine {
-    const { x, y, viewBox } = element.attributes;
-    if (viewBox) this.to.note('inner pages with a box of their own (not scaled)', `line ${element.line}`);
-    return compose(place.by, shift(Number(x ?? 0) || 0, Number(y ?? 0) || 0));
+  /** An inner page or a symbol, fitted to its box where it has one. */
+  #viewport(element: Element, place: Place, size: Element['attributes']): Affine {
+    const { line, attributes } = element;
+    const at = compose(place.by, shift(pixelsOf(size.x) ?? 0, pixelsOf(size.y) ?? 0));
+    if (attributes.viewBox === undefined) return at;
+    const by = fitted(attributes, size);
+    if (by) return compose(at, by);
+    this.to.note('inner pages whose size is not told (not scaled)', `line ${line}`);
+    return at;
   }
 
   #use({ attributes }: Element, place: Place, where: string): void {
@@ -171,10 +165,16 @@ class Walk {
         'Unlink the inner ones.',
       );
     }
-    const at = shift(Number(attributes.x ?? 0) || 0, Number(attributes.y ?? 0) || 0);
-    const inner: Place = { ...place, by: compose(place.by, at), used: [...place.used, id] };
-    if (target.name === 'symbol') this.children(target, inner);
-    else this.#element(target, inner);
+    const used = [...place.used, id];
+    if (target.name === 'symbol') {
+      // what the reference says of the size goes before what the symbol says
+      const size = { ...target.attributes, ...attributes };
+      const style = styleOf(target, place.style, this.sheet);
+      this.children(target, { ...place, style, by: this.#viewport(target, place, size), used });
+    } else {
+      const at = shift(pixelsOf(attributes.x) ?? 0, pixelsOf(attributes.y) ?? 0);
+      this.#element(target, { ...place, by: compose(place.by, at), used });
+    }
   }
 
   /** The layer that a shape's own name makes, where it was given one by hand and they are not too many. */
@@ -212,15 +212,17 @@ class Walk {
   }
 
   #strokes(parts: readonly Subpath[], by: Affine, style: Style, layer: string, where: string): void {
-    const width = Number(
-      /^[\d.]+(e[+-]?\d+)?(px)?$/i.test(style.strokeWidth)
-        ? Number.parseFloat(style.strokeWidth)
-        : Number.NaN,
-    );
-    if (Number.isNaN(width)) {
+    const width = pixelsOf(style.strokeWidth);
+    if (width === null) {
       this.to.note('strokes whose width is in another unit', where);
       return;
     }
+    if (style.dashes !== 'none' && /[1-9]/.test(style.dashes))
+      this.to.note('dashed strokes (taken without gaps)', where);
+    if (style.effect === 'non-scaling-stroke')
+      this.to.note('strokes that do not scale (taken as scaled)', where);
+    if (style.linejoin === 'round' && parts.some(({ vertices }) => vertices.length > 6))
+      this.to.assume('Corners of strokes were taken as mitred also where the file has them round.');
     if (!isSimilar(by)) this.to.note('strokes stretched unevenly (taken with their mean width)', where);
     for (const { vertices, closed } of parts) {
       const own = moved(Float64Array.from(vertices), by, closed);
@@ -243,8 +245,8 @@ class Walk {
     for (const key of ['x', 'y', 'width', 'height', 'rx', 'ry', 'r', 'cx', 'cy', 'x1', 'y1', 'x2', 'y2']) {
       const text = attributes[key];
       if (text === undefined) continue;
-      const value = Number(text.replace(/px\s*$/i, ''));
-      if (!Number.isFinite(value)) {
+      const value = pixelsOf(text);
+      if (value === null) {
         this.to.note('shapes with lengths in other units', where);
         return null;
       }

@@ -7,6 +7,9 @@ export interface Style {
   readonly stroke: string;
   readonly strokeWidth: string;
   readonly linecap: string;
+  readonly linejoin: string;
+  readonly dashes: string;
+  readonly effect: string;
   readonly display: string;
   readonly visibility: string;
 }
@@ -17,6 +20,9 @@ const NAMES: Readonly<Record<string, keyof Style>> = {
   stroke: 'stroke',
   'stroke-width': 'strokeWidth',
   'stroke-linecap': 'linecap',
+  'stroke-linejoin': 'linejoin',
+  'stroke-dasharray': 'dashes',
+  'vector-effect': 'effect',
   display: 'display',
   visibility: 'visibility',
 };
@@ -27,6 +33,9 @@ export const INITIAL: Style = {
   stroke: 'none',
   strokeWidth: '1',
   linecap: 'butt',
+  linejoin: 'miter',
+  dashes: 'none',
+  effect: 'none',
   display: 'inline',
   visibility: 'visible',
 };
@@ -49,7 +58,7 @@ export function readSheet(text: string, into: Map<string, string>): boolean {
 }
 
 export function styleOf(element: Element, around: Style, sheet: Sheet): Style {
-  const style: Record<keyof Style, string> = { ...around, display: 'inline' };
+  const style: Record<keyof Style, string> = { ...around, display: 'inline', effect: 'none' };
   const set = (name: string, value: string | undefined): void => {
     if (!Object.hasOwn(NAMES, name) || value === undefined) return;
     const plain = value.replace(/!important/i, '').trim();
