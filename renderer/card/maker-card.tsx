@@ -1,3 +1,5 @@
+import type { Chip } from '../../solver/chip/chip.ts';
+import { refOfPart } from '../edits/parts.ts';
 import { type ChamberRowWishes, chamberRow } from '../makers/chambers.ts';
 import { type GradientTreeWishes, gradientTree } from '../makers/gradient-tree.ts';
 import { family, familyOf, type Making } from '../makers/made.ts';
@@ -6,6 +8,7 @@ import { type SerpentineWishes, serpentine, serpentineReach } from '../makers/se
 import { type SplitTreeWishes, splitTree } from '../makers/split-tree.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
+import { partsOfMade } from '../tools/maker-tools.ts';
 import { lengthFigure } from '../words/figure.ts';
 import { QuantityField } from './quantity-field.tsx';
 import { remade } from './remake.ts';
@@ -16,6 +19,27 @@ import { ChoiceField } from './text-field.tsx';
 export function MakerCard({ id }: { readonly id: string }) {
   const { desk } = usePage();
   const chip = useStore(desk.project)!.document.chip;
+  const chosen = useStore(desk.view, (view) => view.selection.length);
+  const wishes = wishesOf(chip, id);
+  if (!wishes) return null;
+  const all = partsOfMade(family(chip, familyOf(id))).map(refOfPart);
+  return (
+    <>
+      {wishes}
+      {all.length > Math.max(1, chosen) && (
+        <button
+          type="button"
+          className="quiet"
+          onClick={() => desk.view.patch({ selection: all, panel: 'card' })}
+        >
+          Choose all of {familyOf(id)}, to move, copy or delete it
+        </button>
+      )}
+    </>
+  );
+}
+
+function wishesOf(chip: Chip, id: string) {
   const single = serpentine.read(chip, id);
   if (single) return <SerpentineFields name={id} wishes={single} />;
   const name = familyOf(id);
@@ -61,6 +85,22 @@ function SerpentineFields({ name, wishes }: { readonly name: string; readonly wi
         kind="length"
         unit="um"
         onAccept={(value) => again({ ...wishes, gap: nm(value) })}
+      />
+      <QuantityField
+        label="Bends, at this length"
+        value={wishes.bendRadius / 1e9}
+        kind="length"
+        unit="um"
+        onAccept={(value) => again({ ...wishes, bendRadius: nm(value) })}
+      />
+      <ChoiceField
+        label="Legs"
+        value={wishes.upright ? 'across' : 'up'}
+        choices={[
+          ['up', 'up and down'],
+          ['across', 'to the sides'],
+        ]}
+        onAccept={(way) => again({ ...wishes, upright: way === 'across' })}
       />
       <BoxFields box={wishes.box} onBox={(box) => again({ ...wishes, box })} />
     </section>
@@ -158,12 +198,14 @@ function GradientFields({ name, wishes }: { readonly name: string; readonly wish
         label="Inlets"
         value={wishes.inlets}
         kind="number"
+        counts
         onAccept={(inlets) => again({ ...wishes, inlets })}
       />
       <QuantityField
         label="Stages"
         value={wishes.stages}
         kind="number"
+        counts
         onAccept={(stages) => again({ ...wishes, stages })}
       />
       <QuantityField
@@ -194,6 +236,7 @@ function RowFields({ name, wishes }: { readonly name: string; readonly wishes: C
         label="Chambers"
         value={wishes.count}
         kind="number"
+        counts
         onAccept={(count) => again({ ...wishes, count })}
       />
       <QuantityField

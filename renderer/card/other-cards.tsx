@@ -2,6 +2,7 @@ import type { Chamber, Channel, Via } from '../../solver/chip/chip.ts';
 import { findParts } from '../edits/parts.ts';
 import { widen } from '../edits/shape.ts';
 import { area, boxOf } from '../geometry/path.ts';
+import { familyOf } from '../makers/made.ts';
 import { usePage } from '../page/context.tsx';
 import { PARTS, type Ref } from '../state/ref.ts';
 import { useStore } from '../state/store.ts';
@@ -130,6 +131,8 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
   const channels = parts.flatMap((part) => (part.kind === 'channel' ? [part.value] : []));
   const ports = parts.flatMap((part) => (part.kind === 'port' ? [part.value] : []));
   const vias = parts.flatMap((part) => (part.kind === 'via' ? [part.value] : []));
+  // parts of one making are changed as what they are
+  const made = new Set(parts.map((part) => familyOf(part.value.id)));
   const kinds = PARTS.map(
     (kind) => [kind, parts.filter((part) => part.kind === kind).length] as const,
   ).filter(([, n]) => n > 0);
@@ -141,6 +144,7 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
       `set the ${what} of ${counted(channels.length, 'channel')}`,
       channels.map((channel) => ({ kind: 'channel', value: { ...channel, ...value } })),
     );
+  const depthOf = (id: string): number | null => chip.layers.find((layer) => layer.id === id)?.depth ?? null;
   const layers = common(
     parts.flatMap((part) => (part.kind === 'via' || part.kind === 'keep-out' ? [] : [part.value.layer])),
   );
@@ -160,6 +164,13 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
                 const made = widen(chip, refs, nm(value));
                 return typeof made === 'string' ? made : desk.attempt(made);
               }}
+            />
+            <QuantityField
+              label="Depth"
+              value={toMetres(common(channels.map((channel) => channel.depth ?? depthOf(channel.layer))))}
+              kind="length"
+              unit="um"
+              onAccept={(value) => all({ depth: nm(value) }, 'depth')}
             />
             <QuantityField
               label="Bend radius"
@@ -223,6 +234,7 @@ export function SeveralCard({ refs }: { readonly refs: readonly Ref[] }) {
           />
         )}
       </div>
+      {made.size === 1 && parts[0] && <MakerCard id={parts[0].value.id} />}
       <PlaceFindings ids={parts.map((part) => part.value.id)} />
     </>
   );

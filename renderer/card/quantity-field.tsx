@@ -14,15 +14,26 @@ export interface QuantityFieldProps {
   readonly onAccept: (value: number) => string | null;
   /** It may be left empty: then this is done, and `value` is null. */
   readonly onEmpty?: () => string | null;
+  /** It counts something: steps are of one. */
+  readonly counts?: true;
   /** Why it cannot be typed into. */
   readonly fixed?: string;
 }
 
 /**
  * A number to edit. Nonsense stays in the field, is explained beside it, and is never applied. Up, Down
- * and the wheel go by one in the second digit; with Shift by ten.
+ * and the wheel go by one in the second digit, from what is typed; with Shift by ten.
  */
-export function QuantityField({ label, value, kind, unit, onAccept, onEmpty, fixed }: QuantityFieldProps) {
+export function QuantityField({
+  label,
+  value,
+  kind,
+  unit,
+  onAccept,
+  onEmpty,
+  counts,
+  fixed,
+}: QuantityFieldProps) {
   const id = useId();
   const shownUnit = unit ?? unitFor(value ?? 0, kind);
   const own = value === null ? '' : typed(value, kind, shownUnit);
@@ -53,11 +64,13 @@ export function QuantityField({ label, value, kind, unit, onAccept, onEmpty, fix
   };
   const accept = (): void => setFault(applied());
   const stepBy = (direction: number, far: boolean): void => {
-    if (value === null || fixed) return;
+    const parsed = parseQuantity(text, kind, shownUnit);
+    const from = parsed.ok && text.trim() !== own ? ratioToNumber(parsed.exact) : value;
+    if (from === null || fixed) return;
     const size = unitSize(shownUnit);
-    const inside = Math.abs(value / size);
-    const power = inside > 0 ? 10 ** (Math.floor(Math.log10(inside) + 1e-9) - 1) : 0.1;
-    const next = Number((value / size + direction * power * (far ? 10 : 1)).toPrecision(12)) * size;
+    const inside = Math.abs(from / size);
+    const power = counts ? 1 : inside > 0 ? 10 ** (Math.floor(Math.log10(inside) + 1e-9) - 1) : 0.1;
+    const next = Number((from / size + direction * power * (far ? 10 : 1)).toPrecision(12)) * size;
     setFault(onAccept(next) ?? '');
   };
   useEffect(() => {

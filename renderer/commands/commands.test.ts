@@ -3,6 +3,7 @@ import type { Desk } from '../state/desk.ts';
 import { createStore } from '../state/store.ts';
 import { FIRST_VIEW } from '../state/view.ts';
 import type { Workbench } from '../state/workbench.ts';
+import { teeChip } from '../testing/chips.ts';
 import { keyShown, keyText } from './command.ts';
 import { createCommands } from './commands.ts';
 import { findCommands } from './find.ts';
@@ -64,4 +65,33 @@ test('commands are found by any of their words, the nearest first', () => {
   expect(findCommands(all, 'serp')[0]!.id).toBe('tool serpentine');
   expect(findCommands(all, 'zzz nothing')).toEqual([]);
   expect(findCommands(all, '')).toHaveLength(all.length);
+});
+
+test('by keys alone every part of the chip is come by, forth and back', () => {
+  const chip = teeChip();
+  const view = createStore(FIRST_VIEW);
+  const drawn = {
+    ...desk,
+    view,
+    chip: () => chip,
+    solver: { solved: createStore({ graph: null, result: null }) },
+  } as unknown as Desk;
+  const { run } = createCommands(drawn, {} as Workbench, () => ({}));
+  const seen: string[] = [];
+  for (let i = 0; i < 6; i += 1) {
+    run('next part');
+    seen.push(...view.get().selection);
+  }
+  expect(seen).toEqual([
+    'channel:feed',
+    'channel:up',
+    'channel:down',
+    'port:in',
+    'port:well 1',
+    'port:well 2',
+  ]);
+  run('next part');
+  expect(view.get().selection).toEqual(['channel:feed']);
+  run('previous part');
+  expect(view.get().selection).toEqual(['port:well 2']);
 });

@@ -14,10 +14,30 @@ import { showCommands } from './show.ts';
 export type OwnKeys = Readonly<Record<string, string>>;
 
 export function createCommands(desk: Desk, bench: Workbench, ownKeys: () => OwnKeys): Commands {
+  const show = (ref: Ref): void => {
+    const chip = desk.chip();
+    if (!chip) return;
+    desk.view.patch({ selection: [ref], panel: 'card' });
+    const place = sitePlace(desk, ref) ?? placeOf(chip, ref);
+    const { camera, size } = desk.view.get();
+    if (!place || !camera || size.width === 0) return;
+    const part = partOf(ref) ? findPart(chip, ref) : null;
+    const box = part && boxOfParts([part]);
+    const away = [
+      Math.abs(place[0] - camera.centre[0]) * camera.scale > size.width / 2 - 60,
+      Math.abs(place[1] - camera.centre[1]) * camera.scale > size.height / 2 - 60,
+    ];
+    const tiny =
+      box &&
+      Math.max(box.right - box.left, box.top - box.bottom) * camera.scale < 24 &&
+      part?.kind !== 'port';
+    if (tiny) desk.view.patch({ camera: { ...zoomed(camera, size, [0, 0], 4), centre: place } });
+    else if (away.some(Boolean)) desk.view.patch({ camera: { ...camera, centre: place } });
+  };
   const all: readonly Command[] = [
     ...drawCommands(desk, bench),
     ...changeCommands(desk, bench),
-    ...showCommands(desk),
+    ...showCommands(desk, show),
     ...programCommands(desk),
   ];
   const byId = (id: string): Command => {
@@ -46,26 +66,7 @@ export function createCommands(desk: Desk, bench: Workbench, ownKeys: () => OwnK
     forKey,
     // a key that went over to another command is not shown here any more
     keyOf: (id) => keysOf(byId(id)).find((key) => forKey(key)?.id === id) ?? '',
-    show(ref) {
-      const chip = desk.chip();
-      if (!chip) return;
-      desk.view.patch({ selection: [ref], panel: 'card' });
-      const place = sitePlace(desk, ref) ?? placeOf(chip, ref);
-      const { camera, size } = desk.view.get();
-      if (!place || !camera || size.width === 0) return;
-      const part = partOf(ref) ? findPart(chip, ref) : null;
-      const box = part && boxOfParts([part]);
-      const away = [
-        Math.abs(place[0] - camera.centre[0]) * camera.scale > size.width / 2 - 60,
-        Math.abs(place[1] - camera.centre[1]) * camera.scale > size.height / 2 - 60,
-      ];
-      const tiny =
-        box &&
-        Math.max(box.right - box.left, box.top - box.bottom) * camera.scale < 24 &&
-        part?.kind !== 'port';
-      if (tiny) desk.view.patch({ camera: { ...zoomed(camera, size, [0, 0], 4), centre: place } });
-      else if (away.some(Boolean)) desk.view.patch({ camera: { ...camera, centre: place } });
-    },
+    show,
   };
 }
 

@@ -1,9 +1,10 @@
-import { boxOfParts, findParts } from '../edits/parts.ts';
+import { boxOfParts, findParts, listOf } from '../edits/parts.ts';
 import type { Box } from '../geometry/path.ts';
 import { fitted, INSET, panned, zoomed } from '../sheet/camera.ts';
 import { OVERLAYS } from '../sheet/overlay.ts';
 import { fitChip } from '../sheet/sheet.tsx';
 import type { Desk } from '../state/desk.ts';
+import { PARTS, type Ref } from '../state/ref.ts';
 import { TABS } from '../state/view.ts';
 import type { Command } from './command.ts';
 
@@ -32,7 +33,7 @@ function siteBox(desk: Desk, selection: readonly string[]): Box | null {
   return { left: x - reach, right: x + reach, bottom: y - reach, top: y + reach };
 }
 
-export function showCommands(desk: Desk): Command[] {
+export function showCommands(desk: Desk, bring: (ref: Ref) => void): Command[] {
   const open = (): string | null => (desk.chip() ? null : 'Open or begin a chip first.');
   const show = (
     id: string,
@@ -55,6 +56,18 @@ export function showCommands(desk: Desk): Command[] {
   const zoom = (factor: number) => (): void => {
     const { camera, size } = desk.view.get();
     if (camera) desk.view.patch({ camera: zoomed(camera, size, [size.width / 2, size.height / 2], factor) });
+  };
+  /** The part before or after the one chosen, in the order of the chip. */
+  const another = (by: 1 | -1) => (): void => {
+    const chip = desk.chip()!;
+    const refs = PARTS.flatMap((kind) => listOf(chip, kind).map((part) => `${kind}:${part.id}` as const));
+    if (refs.length === 0) {
+      desk.say('Nothing is drawn yet.');
+      return;
+    }
+    const chosen = desk.view.get().selection;
+    const at = refs.findIndex((ref) => ref === (by > 0 ? chosen.at(-1) : chosen[0]));
+    bring(refs[at < 0 ? (by > 0 ? 0 : refs.length - 1) : (at + by + refs.length) % refs.length]!);
   };
   const pan = (dx: number, dy: number) => (): void => {
     const { camera } = desk.view.get();
@@ -88,6 +101,15 @@ export function showCommands(desk: Desk): Command[] {
         ),
       });
     }),
+    show('next part', 'Next part', ['.'], 'Choose the part after this one, of every kind.', another(1), HELD),
+    show(
+      'previous part',
+      'Previous part',
+      [','],
+      'Choose the part before this one, of every kind.',
+      another(-1),
+      HELD,
+    ),
     show('zoom in', 'Nearer', ['+', '='], 'Enlarge the sheet.', zoom(1.5), HELD),
     show('zoom out', 'Farther', ['-'], 'Make the sheet smaller.', zoom(1 / 1.5), HELD),
     show('pan left', 'Move the view left', ['Ctrl+ArrowLeft'], 'Move the view.', pan(120, 0), HELD),

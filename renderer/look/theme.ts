@@ -12,6 +12,26 @@ const listeners = new Set<() => void>();
 export const scheme = (): Scheme => (choice === 'system' ? (dark?.matches ? 'dark' : 'light') : choice);
 export const palette = (): Palette => (forced?.matches ? FORCED : PALETTES[scheme()]);
 
+/**
+ * The palette as plain colours, for what reads colours by itself and knows no names that the system gives:
+ * plots.
+ */
+export function plainPalette(): Palette {
+  const named = palette();
+  if (!forced?.matches) return named;
+  const probe = document.createElement('span');
+  probe.style.setProperty('forced-color-adjust', 'none');
+  document.body.append(probe);
+  const plain = Object.fromEntries(
+    Object.entries(named).map(([name, colour]) => {
+      probe.style.color = colour;
+      return [name, getComputedStyle(probe).color];
+    }),
+  );
+  probe.remove();
+  return plain as unknown as Palette;
+}
+
 function apply(): void {
   const root = document.documentElement;
   for (const [name, colour] of Object.entries(palette())) root.style.setProperty(`--${name}`, colour);

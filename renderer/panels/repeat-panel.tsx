@@ -50,6 +50,7 @@ export function RepeatPanel() {
           label="How many in all"
           value={count}
           kind="number"
+          counts
           onAccept={(value) => {
             if (!Number.isInteger(value) || value < 2 || value > 1000)
               return 'Takes a whole number from 2 to 1000.';

@@ -1,7 +1,7 @@
 import './mark.ts';
 import Plotly, { type Data, type Layout } from 'plotly.js-dist-min';
 import { useEffect, useReducer, useRef } from 'react';
-import { onTheme, palette } from '../look/theme.ts';
+import { onTheme, plainPalette } from '../look/theme.ts';
 import { FIGURE_FACE, SIZES } from '../look/tokens.ts';
 
 export interface PlotProps {
@@ -27,7 +27,7 @@ export function Plot({ title, data, across, up, limits = [], more, says }: PlotP
   const [, again] = useReducer((n: number) => n + 1, 0);
   useEffect(() => onTheme(again), []);
   useEffect(() => {
-    const look = palette();
+    const look = plainPalette();
     const axis = {
       gridcolor: look.line,
       linecolor: look.line,

@@ -2,7 +2,7 @@ import { useEffect, useReducer, useState } from 'react';
 import { inUnit } from '../../solver/chip/units.ts';
 import { unitInPrint } from '../../solver/chip/units-format.ts';
 import { ChoiceField } from '../card/text-field.tsx';
-import { onTheme, palette } from '../look/theme.ts';
+import { onTheme, plainPalette } from '../look/theme.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import { placeName } from '../verdict/answer.ts';
@@ -10,6 +10,7 @@ import { plusMinus } from '../words/band.ts';
 import { figure, unitFor } from '../words/figure.ts';
 import { Plot } from './plot.tsx';
 import { legsOf, limitAlong, peaksAlong, profileOf, routeEnds } from './route.ts';
+import { splitBars } from './split-bars.ts';
 import { SweepPlots } from './sweep.tsx';
 
 /** Pressure and shear along a route, shares against targets, and a sweep. */
@@ -23,6 +24,7 @@ export default function Plots() {
   return (
     <>
       <RoutePlots />
+      <SplitPlot />
       <TargetPlot />
       <SweepPlots />
     </>
@@ -41,7 +43,7 @@ function RoutePlots() {
   const { from, to } = ends[names.indexOf(route)]!;
   const legs = legsOf(result, from, to);
   const profile = profileOf(result, legs);
-  const look = palette();
+  const look = plainPalette();
   const longest = profile.along.at(-1) ?? 0;
   const length = unitFor(longest, 'length');
   const pressure = unitFor(Math.max(0, ...profile.pressure.map((value) => Math.abs(value ?? 0))), 'pressure');
@@ -148,13 +150,101 @@ function RoutePlots() {
   );
 }
 
+/** px: the mark of what is wanted, across its bar. */
+const WANTED = 22;
+const MOST_BARS = 40;
+
+function SplitPlot() {
+  const { desk } = usePage();
+  const { chip, result } = useStore(desk.solver.solved);
+  const [all, setAll] = useState(false);
+  if (!chip || !result) return null;
+  const { kind, bars } = splitBars(chip, result);
+  if (bars.length === 0) return null;
+  const look = plainPalette();
+  const rows = all ? bars : bars.slice(0, MOST_BARS);
+  const unit =
+    kind === 'share'
+      ? '%'
+      : unitFor(Math.max(...rows.map(({ got, wanted }) => Math.max(got ?? 0, wanted ?? 0))), kind);
+  const names = rows.map(({ name }) => name);
+  const asked = rows.filter((row) => row.wanted !== null);
+  const told = (value: number | null): string => figure(value, kind, { unit, digits: 3 });
+  return (
+    <section aria-label="How it splits">
+      <Plot
+        title={
+          asked.length > 0
+            ? 'How the flow splits; a line where it is wanted, as wide up and down as it may be off'
+            : 'How the flow splits'
+        }
+        across=""
+        up={unitInPrint(unit)}
+        says={rows
+          .map(
+            ({ name, got, band, wanted }) =>
+              `${name} ${told(got)}${plusMinus(band)}${wanted === null ? '' : `, ${told(wanted)} wanted`}`,
+          )
+          .join('; ')}
+        more={{
+          yaxis: {
+            rangemode: 'tozero',
+            automargin: true,
+            gridcolor: look.line,
+            title: { text: unitInPrint(unit) },
+          },
+        }}
+        data={[
+          {
+            type: 'bar',
+            x: names,
+            y: rows.map(({ got }) => (got === null ? null : inUnit(got, unit))),
+            customdata: rows.map(({ band }) => plusMinus(band)),
+            width: 0.5,
+            marker: {
+              color: rows.map(({ met }) => (met ? look.field : look.alarm)),
+              line: { color: rows.map(({ met }) => (met ? look.ink : look.alarm)), width: 1 },
+            },
+            hovertemplate: '%{x}: %{y:.4g}%{customdata}<extra></extra>',
+          },
+          {
+            type: 'scatter',
+            mode: 'markers',
+            x: asked.map(({ name }) => name),
+            y: asked.map(({ wanted }) => inUnit(wanted!, unit)),
+            error_y: {
+              type: 'data',
+              array: asked.map(({ wanted, within }) => inUnit(wanted! * within, unit)),
+              color: look.ink,
+              thickness: 1.5,
+              width: 5,
+            },
+            marker: {
+              symbol: 'line-ew',
+              size: WANTED,
+              color: look.ink,
+              line: { color: look.ink, width: 1.5 },
+            },
+            hovertemplate: '%{x}: %{y:.4g} wanted<extra></extra>',
+          },
+        ]}
+      />
+      {bars.length > MOST_BARS && (
+        <button type="button" className="quiet" onClick={() => setAll(!all)}>
+          {all ? `Only the first ${MOST_BARS}` : `All ${bars.length}`}
+        </button>
+      )}
+    </section>
+  );
+}
+
 function TargetPlot() {
   const { desk } = usePage();
   const { targets } = useStore(desk.solver.solved).result!;
   const chip = useStore(desk.project)!.document.chip;
   const [all, setAll] = useState(false);
   if (targets.length === 0) return <p className="soft">No target is given, so no shares are compared.</p>;
-  const look = palette();
+  const look = plainPalette();
   const shownTargets = all ? targets : targets.slice(0, 40);
   const names = shownTargets.map((target) => target.port ?? target.channel ?? '');
   const off = shownTargets.map((target) =>

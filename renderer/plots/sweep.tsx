@@ -5,7 +5,7 @@ import { unitInPrint } from '../../solver/chip/units-format.ts';
 import { QuantityField } from '../card/quantity-field.tsx';
 import { ChoiceField } from '../card/text-field.tsx';
 import { toEdit } from '../edits/to-edit.ts';
-import { palette } from '../look/theme.ts';
+import { plainPalette } from '../look/theme.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import type { Alteration } from '../tools/tool.ts';
@@ -112,7 +112,7 @@ export function SweepPlots() {
     );
   };
   const unit = unitFor(Math.max(Math.abs(from), Math.abs(to)), handle.kind);
-  const look = palette();
+  const look = plainPalette();
   const across = `${handle.says}, ${unitInPrint(unit)}`;
   const answers = points.map((point) => ({ x: inUnit(point.x, unit), ...answersOf(point.outcome) }));
   const plots = [

@@ -14,7 +14,7 @@ const WIDTH = 188;
 export function Legend() {
   const { desk } = usePage();
   const overlay = useStore(desk.view, (view) => view.overlay);
-  const { chip: solvedChip, result, graph } = useAnswer(desk);
+  const { chip: solvedChip, result, graph, problem } = useAnswer(desk);
   const chip = useStore(desk.project)!.document.chip;
   const [, again] = useReducer((n: number) => n + 1, 0);
   useEffect(() => onTheme(again), []);
@@ -32,7 +32,9 @@ export function Legend() {
             : 'Channels and chambers that a finding names are filled.'
           : now.overlay === 'off target'
             ? 'No target is given.'
-            : 'Colour comes with the first answer.'}
+            : problem
+              ? 'Without an answer there is nothing to colour.'
+              : 'Colour comes with the first answer.'}
       </p>
     );
   const unit = now.kind === 'share' ? '%' : unitFor(Math.max(Math.abs(now.from), Math.abs(now.to)), now.kind);

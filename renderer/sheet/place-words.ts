@@ -29,6 +29,11 @@ const LINES = 4;
 /** px: how far above or below their place words may stand; from the third on a line leads to them. */
 const FAR = [0, 10, 34, 72, 120, 180] as const;
 
+/** px from the middle of the ring: words farther off are led to by a line. */
+const LED = RING + 16;
+/** px: how far to either side; a line leads to them. */
+const ASIDE = [90, 180, 280, 400, 540] as const;
+
 interface Laid {
   readonly heads: readonly string[];
   readonly rests: readonly string[];
@@ -87,12 +92,14 @@ export function drawPlaceWords(
     const { heads, rests, wide, high } = laid;
     const x = right ? left + wide : left;
     room.fill(left - RIM, top - 2, wide + 2 * RIM, high + 4);
-    if (Math.min(Math.abs(top + high - ring[1]), Math.abs(top - ring[1])) > 20) {
+    const near = [held(ring[0], left, left + wide), held(ring[1], top - 2, top + high + 2)] as const;
+    const away = Math.hypot(near[0] - ring[0], near[1] - ring[1]);
+    if (away > LED) {
+      const [ux, uy] = [(near[0] - ring[0]) / away, (near[1] - ring[1]) / away];
       ctx.lineWidth = 1;
       ctx.beginPath();
-      ctx.moveTo(ring[0], ring[1] + (top > ring[1] ? RING : -RING));
-      const near = top > ring[1] ? top - 2 : top + high + 2;
-      ctx.lineTo(Math.min(Math.max(ring[0], left), left + wide), near);
+      ctx.moveTo(ring[0] + RING * ux, ring[1] + RING * uy);
+      ctx.lineTo(near[0], near[1]);
       ctx.stroke();
     }
     // a ground under the words, so that channels do not run through them
@@ -190,6 +197,11 @@ function roomBeside(
           attempt(laid, within(left), under(top), right, cheap + 1.2);
         }
         attempt(laid, within(x - wide / 2), under(top), false, laid.cost + step + 1.4);
+        for (const [i, aside] of ASIDE.entries())
+          for (const way of [1, -1]) {
+            const left = way > 0 ? x + RING + 7 + aside : x - RING - 7 - aside - wide;
+            attempt(laid, within(left), under(top), way < 0, laid.cost + step + 3 + i);
+          }
       }
   }
   return best;
