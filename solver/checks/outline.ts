@@ -19,28 +19,20 @@ export function checkOutline(drawn: Drawn, found: Gathered): void {
   const extra = new Map(chip.layers.map((layer, i) => [layer.id, depths[i]!]));
   const { elements, boxes, layerOf } = drawingOf(chip);
   for (const [c, { id, path, depth }] of chip.channels.entries()) {
-    let box: Box = [Infinity, Infinity, -Infinity, -Infinity];
+    let minX = Infinity;
+    let minY = Infinity;
+    let maxX = -Infinity;
+    let maxY = -Infinity;
     for (let e = elements.first[c]!; e < elements.first[c + 1]!; e += 1) {
-      box = [
-        Math.min(box[0], boxes[4 * e]!),
-        Math.min(box[1], boxes[4 * e + 1]!),
-        Math.max(box[2], boxes[4 * e + 2]!),
-        Math.max(box[3], boxes[4 * e + 3]!),
-      ];
+      minX = Math.min(minX, boxes[4 * e]!);
+      minY = Math.min(minY, boxes[4 * e + 1]!);
+      maxX = Math.max(maxX, boxes[4 * e + 2]!);
+      maxY = Math.max(maxY, boxes[4 * e + 3]!);
     }
     // A channel that ends on the outline is meant to open to the side.
-    const open = [path[0]!, path.at(-1)!].some(([x, y]) => {
-      const { width, height } = chip.outline;
-      return x <= TOUCH || y <= TOUCH || x >= width - TOUCH || y >= height - TOUCH;
-    });
-    judge(
-      drawn,
-      id,
-      id,
-      grown(box, depth === undefined ? depths[layerOf[c]!]! : depth * undercut),
-      open,
-      found,
-    );
+    const open = onEdge(chip, path[0]!) || onEdge(chip, path[path.length - 1]!);
+    const by = depth === undefined ? depths[layerOf[c]!]! : depth * undercut;
+    judge(drawn, id, id, [minX - by, minY - by, maxX + by, maxY + by], open, found);
   }
   for (const { id, layer, outline } of chip.chambers) {
     const xs = outline.map(([x]) => x);
@@ -54,6 +46,12 @@ export function checkOutline(drawn: Drawn, found: Gathered): void {
     judge(drawn, `port:${id}`, id, around(at, diameter), diameter === 0, found);
 }
 
+function onEdge({ outline }: Chip, at: readonly [number, number]): boolean {
+  const x = at[0];
+  const y = at[1];
+  return x <= TOUCH || y <= TOUCH || x >= outline.width - TOUCH || y >= outline.height - TOUCH;
+}
+
 const grown = ([a, b, c, d]: Box, by: number): Box => [a - by, b - by, c + by, d + by];
 const around = ([x, y]: readonly [number, number], diameter: number): Box =>
   grown([x, y, x, y], diameter / 2);
@@ -62,16 +60,17 @@ function judge(
   { chip, rules }: Drawn,
   where: string,
   name: string,
-  [minX, minY, maxX, maxY]: Box,
+  box: Box,
   open: boolean,
   found: Gathered,
 ): void {
   const { width, height } = chip.outline;
-  const sides = [minX, minY, width - maxX, height - maxY];
-  const least = Math.min(...sides);
+  const least = Math.min(box[0], box[1], width - box[2], height - box[3]);
   const edge = rules?.edge;
   const over = least < -TOUCH;
   if (!over && (open || !edge || least >= edge.number)) return;
+  const [minX, minY, maxX, maxY] = box;
+  const sides = [minX, minY, width - maxX, height - maxY];
   const at = placeOf(...nearestPlace(sides.indexOf(least), [minX, minY, maxX, maxY], width, height));
   if (over) {
     found.add({

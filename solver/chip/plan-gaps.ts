@@ -1,8 +1,14 @@
 import Flatbush from 'flatbush';
 import type { Chip, Nm } from './chip.ts';
-import { type Area, areasOverlap, disc, inArea, polygon } from './geometry/area.ts';
+import {
+  type Area,
+  areaOf as areaIn,
+  areasOverlap,
+  areasOverlapOnce,
+  discOf,
+  inArea,
+} from './geometry/area.ts';
 import { type Body, outline } from './geometry/body.ts';
-import { byPair } from './geometry/by-pair.ts';
 import { type Curve, nearest, pointAt } from './geometry/curve.ts';
 import { TOUCH } from './geometry/tolerance.ts';
 import { type Drawing, drawingOf, layerNumbers } from './read-graph-drawing.ts';
@@ -38,10 +44,7 @@ export function gaps(chip: Chip, below: Nm): Gap[] {
   const index = new Flatbush(solids.length);
   for (const { area } of solids) index.add(area.minX, area.minY, area.maxX, area.maxY);
   index.finish();
-  const meets = (p: Solid, q: Solid): boolean =>
-    drawing.keeps && p.element >= 0 && q.element >= 0
-      ? overlapOf(p.area, q.area, areasOverlap)
-      : areasOverlap(p.area, q.area);
+  const meets = drawing.keeps ? areasOverlapOnce : areasOverlap;
   const thinnest = new Map<string, Gap>();
   for (let i = 0; i < solids.length; i++) {
     const p = solids[i]!;
@@ -50,7 +53,7 @@ export function gaps(chip: Chip, below: Nm): Gap[] {
     if (near.length > 1) near.sort((a, b) => a - b);
     for (const j of near) {
       const q = solids[j]!;
-      if (q.layer !== p.layer || meets(p, q)) continue;
+      if (q.layer !== p.layer || meets(p.area, q.area)) continue;
       const wall = (x: number, y: number) => !filled(solids, index, p.layer, x, y);
       const gap = narrowest(p.area.edges, q.area.edges, below, wall);
       if (!gap || gap.width <= TOUCH) continue;
@@ -72,7 +75,6 @@ function solidsOf(chip: Chip, drawing: Drawing): Solid[] {
   return [...solids, ...otherSolids(chip)];
 }
 
-const overlapOf = byPair<Area, boolean>();
 const areas = new WeakMap<Body, Area>();
 
 /** What a body covers; the same object for the same body. */
@@ -101,10 +103,10 @@ export function otherSolids(chip: Chip): Solid[] {
   const add = (id: string, layer: string, area: Area) => {
     solids.push({ id, layer: layers.get(layer)!, area, element: -1 });
   };
-  for (const c of chip.chambers) add(c.id, c.layer, polygon(c.outline));
-  for (const v of chip.vias) for (const l of v.layers) add(v.id, l, disc(v.at[0], v.at[1], v.diameter / 2));
+  for (const c of chip.chambers) add(c.id, c.layer, areaIn(c.outline));
+  for (const v of chip.vias) for (const l of v.layers) add(v.id, l, discOf(v));
   for (const p of chip.ports) {
-    if (p.diameter > 0) add(p.id, p.layer, disc(p.at[0], p.at[1], p.diameter / 2));
+    if (p.diameter > 0) add(p.id, p.layer, discOf(p));
   }
   return solids;
 }

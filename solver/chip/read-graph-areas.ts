@@ -2,7 +2,15 @@ import Flatbush from 'flatbush';
 import type { Finding } from '../problem/finding.ts';
 import { Problem } from '../problem/problem.ts';
 import type { Point } from './chip.ts';
-import { type Area, areasOverlap, centroid, disc, inArea, polygon } from './geometry/area.ts';
+import {
+  type Area,
+  areaOf,
+  areasOverlap,
+  areasOverlapOnce,
+  centroid,
+  discOf,
+  inArea,
+} from './geometry/area.ts';
 import { covers, halfAt } from './geometry/body.ts';
 import { um } from './geometry/centreline.ts';
 import { nearest, pointAt } from './geometry/curve.ts';
@@ -47,15 +55,11 @@ export function readPlaces(drawing: Drawing, links: Links, findings: Finding[]):
     return node;
   };
   const chambers = chip.chambers.map((c) =>
-    place('chamber', c.id, polygon(c.outline), [c.layer], centroid(c.outline)),
+    place('chamber', c.id, areaOf(c.outline), [c.layer], centroid(c.outline)),
   );
-  const vias = chip.vias.map((v) =>
-    place('via', v.id, disc(v.at[0], v.at[1], v.diameter / 2), v.layers, v.at),
-  );
+  const vias = chip.vias.map((v) => place('via', v.id, discOf(v), v.layers, v.at));
   const ports = chip.ports.map((p) =>
-    p.diameter > 0
-      ? place('port', p.id, disc(p.at[0], p.at[1], p.diameter / 2), [p.layer], p.at)
-      : links.addNode(p.at[0], p.at[1]),
+    p.diameter > 0 ? place('port', p.id, discOf(p), [p.layer], p.at) : links.addNode(p.at[0], p.at[1]),
   );
   const index = placeIndex(all);
   const wet = all.map((p) => p.layers.map(() => p.kind === 'chamber'));
@@ -65,7 +69,7 @@ export function readPlaces(drawing: Drawing, links: Links, findings: Finding[]):
       if (joinToArea(drawing, links, p, p.layers[k]!, findings)) wet[i]![k] = true;
     }
   }
-  for (let i = 0; i < all.length; i++) uniteOverlapping(all, i, index, links, wet);
+  for (let i = 0; i < all.length; i++) uniteOverlapping(drawing, all, i, index, links, wet);
   for (let i = 0; i < all.length; i++) {
     const dry = wet[i]!.indexOf(false);
     if (dry >= 0) throw outside(drawing, all[i]!.kind, all[i]!.id, all[i]!.at, all[i]!.layers[dry]!);
@@ -90,6 +94,7 @@ function placeIndex(all: readonly Place[]): Flatbush | undefined {
 
 /** Chambers and holes that overlap on a layer are one place. */
 function uniteOverlapping(
+  drawing: Drawing,
   all: readonly Place[],
   i: number,
   index: Flatbush | undefined,
@@ -98,10 +103,11 @@ function uniteOverlapping(
 ): void {
   const p = all[i]!;
   const { minX, minY, maxX, maxY } = p.area;
+  const meet = drawing.keeps ? areasOverlapOnce : areasOverlap;
   for (const j of index!.search(minX, minY, maxX, maxY, (k) => k > i).sort((a, b) => a - b)) {
     const q = all[j]!;
     const shared = p.layers.filter((l) => q.layers.includes(l));
-    if (shared.length === 0 || !areasOverlap(p.area, q.area)) continue;
+    if (shared.length === 0 || !meet(p.area, q.area)) continue;
     links.unite(p.node, q.node);
     for (const l of shared) {
       // a hole is wet where it meets a chamber, or a via that brings fluid

@@ -21,6 +21,9 @@ const MOST_BODIES = 4000;
  */
 const bodiesOf = new WeakMap<Channel, { readonly place: number; readonly bodies: Body[] }>();
 
+const NONE: readonly number[] = [];
+const ascending = (a: number, b: number): number => a - b;
+
 /** The channels of a chip in the plan, with an index over what their elements cover. */
 export class Drawing {
   readonly chip: Chip;
@@ -33,6 +36,7 @@ export class Drawing {
   readonly index: Flatbush | undefined;
   readonly #p = new Float64Array(CORNERS);
   readonly #q = new Float64Array(CORNERS);
+  readonly #near: (readonly number[])[] = [];
 
   /** What the bends had to say. */
   readonly findings: readonly Finding[];
@@ -71,6 +75,18 @@ export class Drawing {
   /** Whether bodies are kept: the same object for the same element of the same channel, in this drawing and others. */
   get keeps(): boolean {
     return this.elements.count <= MOST_BODIES;
+  }
+
+  /** Later elements whose boxes meet that of element `i`, in order; searched for once where there are few. */
+  near(i: number): readonly number[] {
+    const known = this.#near[i];
+    if (known || !this.index) return known ?? NONE;
+    const b = this.boxes;
+    const later = (j: number): boolean => j > i;
+    const found = this.index.search(b[4 * i]!, b[4 * i + 1]!, b[4 * i + 2]!, b[4 * i + 3]!, later);
+    if (found.length > 1) found.sort(ascending);
+    if (this.keeps) this.#near[i] = found;
+    return found;
   }
 
   body(id: number): Body {

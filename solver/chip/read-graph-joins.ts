@@ -31,22 +31,14 @@ function tooMany(drawing: Drawing): Problem {
  * list of what overlaps without that. Candidates come from the index, never from all pairs.
  */
 export function joinChannels(drawing: Drawing, links: Links): Encounters {
-  const { elements, layerOf, boxes, index } = drawing;
+  const { elements, layerOf } = drawing;
   const found: Encounters = { overA: [], overB: [], sameLine: false };
-  if (!index) return found;
   const { data, channel } = elements;
   const meetings = new Meetings();
   const here: Here = { node: -1, s: 0 };
   let pairs = 0;
   for (let i = 0; i < elements.count; i++) {
-    const near: number[] = index.search(
-      boxes[4 * i]!,
-      boxes[4 * i + 1]!,
-      boxes[4 * i + 2]!,
-      boxes[4 * i + 3]!,
-      (j) => j > i,
-    );
-    if (near.length > 1) near.sort((p, q) => p - q);
+    const near = drawing.near(i);
     const a = channel[i]!;
     here.node = -1;
     for (const j of near) {

@@ -1,6 +1,7 @@
 import type { Finding } from '../problem/finding.ts';
-import { commonGround, cuts, edgesNear, inArea, nearestEdge } from './geometry/area.ts';
+import { type Area, commonGround, cuts, edgesNear, inArea, nearestEdge } from './geometry/area.ts';
 import { type Body, endCorners, halfAt, loopsOverlap, outline } from './geometry/body.ts';
+import { byPair } from './geometry/by-pair.ts';
 import { um } from './geometry/centreline.ts';
 import { line, meet, nearest, pointAt, tangentAt } from './geometry/curve.ts';
 import { TOUCH } from './geometry/tolerance.ts';
@@ -29,8 +30,10 @@ export function joinToArea(
   for (const i of near) {
     const b = drawing.body(i);
     if (drawing.layerOf[b.element.channel] !== layer) continue;
-    if (enter(place, b, taken)) entered.add(i);
-    else if (meets(place, b)) beside.push(i);
+    const met = drawing.keeps ? metBy(area, b, () => meeting(place, b)) : meeting(place, b);
+    for (const stretch of met.inside) runOn(taken, b.element.channel, stretch);
+    if (met.inside.length > 0) entered.add(i);
+    else if (met.beside) beside.push(i);
   }
   for (const t of taken) {
     const core = place.kind === 'chamber' ? undefined : t.core;
@@ -54,18 +57,49 @@ export function joinToArea(
 }
 
 /** A stretch of a channel's centreline in an area, with its place nearest to the area's centre. */
-interface Taken {
-  readonly channel: number;
+interface Stretch {
   readonly low: number;
-  high: number;
-  half: number;
-  core: number;
+  readonly high: number;
+  readonly half: number;
+  readonly core: number;
   /** Distance of that place from the centre. */
-  off: number;
+  readonly off: number;
 }
 
-/** Adds the stretches of an element's centreline in the area, run on from those of the element before. */
-function enter(place: Place, b: Body, taken: Taken[]): boolean {
+interface Taken extends Writable<Stretch> {
+  readonly channel: number;
+}
+type Writable<T> = { -readonly [K in keyof T]: T[K] };
+
+/** What an area has of an element: stretches of its centreline, or else whether it lies beside it. */
+interface Meeting {
+  readonly inside: readonly Stretch[];
+  readonly beside: boolean;
+}
+
+/** A place's centre goes with its area, so this depends on nothing else. */
+const metBy = byPair<Area, Meeting, Body>();
+
+function meeting(place: Place, b: Body): Meeting {
+  const inside = stretchesIn(place, b);
+  return { inside, beside: inside.length === 0 && meets(place, b) };
+}
+
+/** Adds a stretch, run on from that of the element before. */
+function runOn(taken: Taken[], channel: number, { low, high, half, core, off }: Stretch): void {
+  const last = taken[taken.length - 1];
+  if (last && last.channel === channel && low - last.high <= TOUCH) {
+    last.high = high;
+    last.half = Math.min(last.half, half);
+    if (off < last.off) {
+      last.off = off;
+      last.core = core;
+    }
+  } else taken.push({ channel, low, high, half, core, off });
+}
+
+/** The stretches of an element's centreline in the area. */
+function stretchesIn(place: Place, b: Body): Stretch[] {
   const e = b.element;
   const { area } = place;
   const stops = [0, ...cuts(area, e.curve), e.curve.length];
@@ -75,12 +109,11 @@ function enter(place: Place, b: Body, taken: Taken[]): boolean {
     inside.push(stops[k]! - stops[k - 1]! > TOUCH && inArea(area, x, y));
   }
   inside.push(false);
-  let any = false;
+  const found: Stretch[] = [];
   for (let k = 1; k < stops.length; k++) {
     // a mere touch counts too
     const touch = k < stops.length - 1 && !inside[k] && !inside[k + 1];
     if (!inside[k] && !touch) continue;
-    any = true;
     const from = touch ? stops[k]! : stops[k - 1]!;
     const to = stops[k]!;
     const core = Math.min(Math.max(nearest(e.curve, place.at[0], place.at[1]), from), to);
@@ -88,17 +121,9 @@ function enter(place: Place, b: Body, taken: Taken[]): boolean {
     const off = Math.hypot(x - place.at[0], y - place.at[1]);
     const s = e.s0 + core;
     const half = halfAt(e, s);
-    const last = taken[taken.length - 1];
-    if (last && last.channel === e.channel && e.s0 + from - last.high <= TOUCH) {
-      last.high = e.s0 + to;
-      last.half = Math.min(last.half, half);
-      if (off < last.off) {
-        last.off = off;
-        last.core = s;
-      }
-    } else taken.push({ channel: e.channel, low: e.s0 + from, high: e.s0 + to, half, core: s, off });
+    found.push({ low: e.s0 + from, high: e.s0 + to, half, core: s, off });
   }
-  return any;
+  return found;
 }
 
 function meets(place: Place, b: Body): boolean {

@@ -139,16 +139,14 @@ function targetBand(
   share: boolean,
   { ports, channels }: Pick<Told, 'ports' | 'channels'>,
 ): TargetResult {
-  const of = (band: NonNullable<PieceResult['band'] | PortResult['band']>): number =>
-    share ? band.share : band.flow;
   if (target.got === null) return target;
-  const found =
+  const told: readonly Pick<PieceResult | PortResult, 'band'>[] =
     target.port === undefined
-      ? channels
-          .find(({ id }) => id === target.channel)
-          ?.pieces.flatMap(({ band }) => (band ? [of(band)] : []))
-      : ports.flatMap(({ id, band }) => (id === target.port && band ? [of(band)] : []));
-  return found && found.length > 0 ? { ...target, band: Math.max(...found) } : target;
+      ? (channels.find(({ id }) => id === target.channel)?.pieces ?? [])
+      : [ports.find(({ id }) => id === target.port) ?? {}];
+  let most: number | null = null;
+  for (const { band } of told) if (band) most = Math.max(most ?? 0, share ? band.share : band.flow);
+  return most === null ? target : { ...target, band: most };
 }
 
 /** Of a wall shear, or of damage by a law; what a curve or a floor counts has none that could be told so simply. */

@@ -103,8 +103,11 @@ export const stepped = (page: Page, label: string, times: number): Promise<Stage
           paint: painted - words,
           rest: whole - words,
         });
-        // the junctions of the step before are out of the way
-        await new Promise((done) => setTimeout(done, 250));
+        // the junctions of the step before are solved, answered and out of the way
+        for (let quiet = 0, began = performance.now(); quiet < 5 && performance.now() - began < 5000; ) {
+          await new Promise((done) => setTimeout(done, 60));
+          quiet = bar.getAttribute('aria-busy') === 'false' ? quiet + 1 : 0;
+        }
       }
       Worker.prototype.postMessage = postMessage;
       return out;

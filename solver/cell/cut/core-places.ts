@@ -1,5 +1,13 @@
 import type { Chip } from '../../chip/chip.ts';
-import { type Area, areasOverlap, commonGround, disc, polygon } from '../../chip/geometry/area.ts';
+import {
+  type Area,
+  areaOf,
+  areasOverlap,
+  areasOverlapOnce,
+  commonGround,
+  commonGroundOnce,
+  disc,
+} from '../../chip/geometry/area.ts';
 import { type Body, halfAt } from '../../chip/geometry/body.ts';
 import { distanceTo, nearest, pointAt } from '../../chip/geometry/curve.ts';
 import { type Drawing, layerNumbers } from '../../chip/read-graph-drawing.ts';
@@ -8,21 +16,23 @@ import { addSource, type Hole, type Sources, span } from './sources.ts';
 /** Chambers with all that opens into them. */
 export function chambers(chip: Chip, drawing: Drawing, found: Sources): void {
   const layers = layerNumbers(chip);
-  const areas = chip.chambers.map((c) => polygon(c.outline));
+  const areas = chip.chambers.map((c) => areaOf(c.outline));
   const sources = areas.map(() => addSource(found));
+  const overlap = drawing.keeps ? areasOverlapOnce : areasOverlap;
+  const ground = drawing.keeps ? commonGroundOnce : commonGround;
   chip.chambers.forEach((c, i) => {
     const layer = layers.get(c.layer)!;
     const source = sources[i]!;
     found.chambers.set(source, [i]);
     const { fillet } = chip.layers[layer]!;
     for (const b of bodiesAt(drawing, areas[i]!, layer)) {
-      const corners = commonGround(areas[i]!, b);
+      const corners = ground(areas[i]!, b);
       span(found, b, corners, source, 1.5 * fillet);
     }
     found.holes.forEach((hole, k) => {
-      if (hole.layer !== layer || !areasOverlap(areas[i]!, hole.area)) return;
+      if (hole.layer !== layer || !overlap(areas[i]!, hole.area)) return;
       for (const edge of areas[i]!.edges) clearOf(hole, distanceTo(edge, hole.x, hole.y), hole.radius);
-      hole.area = disc(hole.x, hole.y, hole.radius);
+      recut(hole);
       addHole(found, source, k);
     });
   });
@@ -49,16 +59,18 @@ const SLIVER = 0.06;
  * that all but touches a wall is taken so much wider that it cuts it: what flowed in that gap is nothing.
  */
 export function holeContacts(drawing: Drawing, found: Sources): void {
+  const ground = drawing.keeps ? commonGroundOnce : commonGround;
   found.holes.forEach((hole, k) => {
     const under = bodiesAt(drawing, hole.area, hole.layer);
     for (const b of under) {
       const { offset, half } = footOf(hole, b);
       for (const gap of [half - offset, half + offset]) clearOf(hole, gap, half);
     }
-    hole.area = disc(hole.x, hole.y, hole.radius);
+    recut(hole);
     for (const b of under) {
-      const corners = commonGround(hole.area, b);
-      if (corners.length === 0) continue;
+      const met = ground(hole.area, b);
+      if (met.length === 0) continue;
+      const corners = [...met];
       // the rim bulges along the strip beyond where it meets the walls
       const { d, offset, half } = footOf(hole, b);
       const c = b.element.curve;
@@ -77,6 +89,12 @@ export function holeContacts(drawing: Drawing, found: Sources): void {
 /** Widens a hole whose rim all but touches a wall at `distance` from its centre; `size` is what that is small against. */
 function clearOf(hole: Hole, distance: number, size: number): void {
   if (Math.abs(distance - hole.radius) < SLIVER * size) hole.radius = distance + SLIVER * size;
+}
+
+/** The area of a hole that may have been widened; the same object where it was not. */
+function recut(hole: Hole): void {
+  const { x, y, radius, area } = hole;
+  if (area.maxX !== x + radius) hole.area = disc(x, y, radius);
 }
 
 /** Distance along an element to below a hole's centre, how far that lies from the centreline, and half the width. */

@@ -1,5 +1,5 @@
 import type { Chip } from '../../chip/chip.ts';
-import { disc } from '../../chip/geometry/area.ts';
+import { discOf } from '../../chip/geometry/area.ts';
 import { type Body, commonCorners } from '../../chip/geometry/body.ts';
 import { byPair } from '../../chip/geometry/by-pair.ts';
 import { tangentAt } from '../../chip/geometry/curve.ts';
@@ -9,7 +9,7 @@ import { BEND_TURN } from './bounds.ts';
 import { bends } from './core-bends.ts';
 import { endOnEnd, type Joint, jointOf } from './core-joints.ts';
 import { chambers, holeContacts } from './core-places.ts';
-import { addSource, type Hole, type Sources, span } from './sources.ts';
+import { addReach, addSource, type Hole, type Reach, reachOf, type Sources } from './sources.ts';
 
 /**
  * Everything that needs a cell, as stretches along channels: where covered areas overlap (junctions,
@@ -42,34 +42,26 @@ function holesOf(chip: Chip, graph: Graph): Hole[] {
     const site = siteOfVia.get(v.id)!;
     const [x, y] = v.at;
     const radius = v.diameter / 2;
-    for (const l of v.layers)
-      holes.push({ x, y, radius, layer: layers.get(l)!, site, area: disc(x, y, radius) });
+    for (const l of v.layers) holes.push({ x, y, radius, layer: layers.get(l)!, site, area: discOf(v) });
   }
   chip.ports.forEach((p, i) => {
     if (p.diameter <= 0) return;
     const [x, y] = p.at;
     const radius = p.diameter / 2;
     const site = graph.portSite[i]!;
-    holes.push({ x, y, radius, layer: layers.get(p.layer)!, site, area: disc(x, y, radius) });
+    holes.push({ x, y, radius, layer: layers.get(p.layer)!, site, area: discOf(p) });
   });
   return holes;
 }
 
 /** Elements of one layer that overlap, other than neighbours in one channel. */
 function overlaps(chip: Chip, drawing: Drawing, found: Sources): void {
-  const { elements, boxes, index, layerOf } = drawing;
-  if (!index) return;
+  const { elements, layerOf } = drawing;
   const { channel } = elements;
   for (let i = 0; i < elements.count; i++) {
-    const near: number[] = index.search(
-      boxes[4 * i]!,
-      boxes[4 * i + 1]!,
-      boxes[4 * i + 2]!,
-      boxes[4 * i + 3]!,
-      (j) => j > i,
-    );
-    if (near.length > 1) near.sort((p, q) => p - q);
-    for (const j of near) {
+    const near = drawing.near(i);
+    for (let k = 0; k < near.length; k++) {
+      const j = near[k]!;
       const a = channel[i]!;
       const b = channel[j]!;
       if (layerOf[a] !== layerOf[b] || (a === b && j <= i + 1)) continue;
@@ -78,23 +70,23 @@ function overlaps(chip: Chip, drawing: Drawing, found: Sources): void {
       const find = (): Shared | null => sharedOf(drawing, i, j);
       const shared = drawing.keeps ? sharedBy(p, q, find) : find();
       if (!shared) continue;
-      const { joint, corners } = shared;
-      if (joint) {
-        endOnEnd(found, chip, drawing, joint);
+      if (shared.joint) {
+        endOnEnd(found, chip, drawing, shared.joint);
         continue;
       }
       const source = addSource(found);
       const margin = filletReach(chip, drawing, p, q);
-      span(found, p, corners, source, margin);
-      span(found, q, corners, source, margin);
+      addReach(found, p, shared.ofP, source, margin);
+      addReach(found, q, shared.ofQ, source, margin);
     }
   }
 }
 
-/** What two elements have in common: the point that their channels both end on, or the corners of their common ground. */
+/** What two elements have in common: the point that their channels both end on, or how far their common ground reaches. */
 interface Shared {
   readonly joint: Joint | undefined;
-  readonly corners: readonly (readonly [number, number])[];
+  readonly ofP: Reach | null;
+  readonly ofQ: Reach | null;
 }
 
 /** What was found of two bodies, which depends on nothing else. */
@@ -107,7 +99,8 @@ function sharedOf(drawing: Drawing, i: number, j: number): Shared | null {
   const q = drawing.body(j);
   if (p.element.channel === q.element.channel && sameBend(p, q)) return null;
   const joint = jointOf(p, q, drawing);
-  return { joint, corners: joint ? [] : commonCorners(p, q) };
+  const corners = joint ? [] : commonCorners(p, q);
+  return { joint, ofP: reachOf(p, corners), ofQ: reachOf(q, corners) };
 }
 
 /** Parts of one channel that overlap beside a slight bend, which is no cell. */

@@ -42,14 +42,11 @@ export function addSource(found: Sources, weak = false, taper = false): number {
   return found.weak.length - 1;
 }
 
-/** Adds the stretch of a body's channel over which it has ground in common with something. */
-export function span(
-  found: Sources,
-  b: Body,
-  corners: readonly (readonly [number, number])[],
-  source: number,
-  margin: number,
-): void {
+/** From where to where along a channel. */
+export type Reach = readonly [low: number, high: number];
+
+/** The stretch of a body's channel over which it has ground in common with something; null without corners. */
+export function reachOf(b: Body, corners: readonly (readonly [number, number])[]): Reach | null {
   const e = b.element;
   let low = Infinity;
   let high = -Infinity;
@@ -58,7 +55,23 @@ export function span(
     low = Math.min(low, s);
     high = Math.max(high, s);
   }
-  if (low <= high) {
-    found.cores.push({ channel: e.channel, low: low - margin, high: high + margin, source });
-  }
+  return low <= high ? [low, high] : null;
+}
+
+/** Adds a stretch of a body's channel, so much longer at both ends. */
+export function addReach(found: Sources, b: Body, reach: Reach | null, source: number, margin: number): void {
+  if (!reach) return;
+  const [low, high] = reach;
+  found.cores.push({ channel: b.element.channel, low: low - margin, high: high + margin, source });
+}
+
+/** Adds the stretch of a body's channel over which it has ground in common with something. */
+export function span(
+  found: Sources,
+  b: Body,
+  corners: readonly (readonly [number, number])[],
+  source: number,
+  margin: number,
+): void {
+  addReach(found, b, reachOf(b, corners), source, margin);
 }

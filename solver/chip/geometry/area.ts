@@ -1,6 +1,7 @@
 import Flatbush from 'flatbush';
 import type { Point } from '../chip.ts';
 import { type Body, covers, inLoop, outline } from './body.ts';
+import { byPair } from './by-pair.ts';
 import { type Curve, curve, distanceTo, line, meet, pointAt } from './curve.ts';
 import { TOUCH } from './tolerance.ts';
 
@@ -21,6 +22,30 @@ const FEW = 32;
 export function disc(x: number, y: number, radius: number): Area {
   const edges = [curve(x - radius, y, x + radius, y, 1), curve(x + radius, y, x - radius, y, 1)];
   return { edges, minX: x - radius, minY: y - radius, maxX: x + radius, maxY: y + radius, index: undefined };
+}
+
+const discs = new WeakMap<object, Area>();
+
+/** What the hole of a port or via covers: the same object for the same hole, which never changes in place. */
+export function discOf(hole: { readonly at: Point; readonly diameter: number }): Area {
+  let area = discs.get(hole);
+  if (!area) {
+    area = disc(hole.at[0], hole.at[1], hole.diameter / 2);
+    discs.set(hole, area);
+  }
+  return area;
+}
+
+const polygons = new WeakMap<readonly Point[], Area>();
+
+/** What a chamber covers: the same object for the same outline, which never changes in place. */
+export function areaOf(outline: readonly Point[]): Area {
+  let area = polygons.get(outline);
+  if (!area) {
+    area = polygon(outline);
+    polygons.set(outline, area);
+  }
+  return area;
 }
 
 /** Twice the signed area of a polygon, positive counter-clockwise. */
@@ -129,6 +154,13 @@ export function areasOverlap(a: Area, b: Area): boolean {
   return inArea(many, p.x0, p.y0) || inArea(few, q.x0, q.y0);
 }
 
+const overlapping = byPair<Area, boolean>();
+
+/** As `areasOverlap`, remembered: for areas that an edit elsewhere leaves the same objects. */
+export function areasOverlapOnce(a: Area, b: Area): boolean {
+  return overlapping(a, b, areasOverlap);
+}
+
 /** Centre of gravity of a polygon; the mean of its corners where it encloses nothing. */
 export function centroid(points: readonly Point[]): Point {
   const [ox, oy] = points[0]!;
@@ -150,6 +182,13 @@ export function centroid(points: readonly Point[]): Point {
     my += ay / points.length;
   }
   return area === 0 ? [ox + mx, oy + my] : [ox + x / (3 * area), oy + y / (3 * area)];
+}
+
+const common = byPair<Area, readonly (readonly [number, number])[], Body>();
+
+/** As `commonGround`, remembered: for areas and bodies that an edit elsewhere leaves the same objects. */
+export function commonGroundOnce(area: Area, b: Body): readonly (readonly [number, number])[] {
+  return common(area, b, commonGround);
 }
 
 /** Corners of the ground that an area and an element have in common; none where they only touch in less than TOUCH. */

@@ -1,6 +1,10 @@
 /** What was found of two things that never change, kept while both are. */
-export function byPair<A extends object, T>(): (p: A, q: A, find: (p: A, q: A) => T) => T {
-  const kept = new WeakMap<A, WeakMap<A, { readonly found: T }>>();
+export function byPair<A extends object, T, B extends object = A>(): (
+  p: A,
+  q: B,
+  find: (p: A, q: B) => T,
+) => T {
+  const kept = new WeakMap<A, WeakMap<B, { readonly found: T }>>();
   return (p, q, find) => {
     let others = kept.get(p);
     if (!others) {
