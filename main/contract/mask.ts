@@ -37,13 +37,13 @@ export const maskOptions = z.strictObject({
   polarity: z.enum(['dark-field', 'clear-field']).optional(),
   /** Draw the holes of ports and vias in their layers too; false where absent. */
   pads: z.boolean().optional(),
-  /** Pairs of alignment marks left and right of the chip; true where absent. */
+  /** Pairs of alignment marks left and right of the chip, shared by neighbours on a wafer; true where absent. */
   marks: z.boolean().optional(),
   /** Names and notes; true where absent. */
   labels: z.boolean().optional(),
   /** The chip's outline; true where absent. */
   outline: z.boolean().optional(),
-  /** Width of the dicing lane round the outline, 0 for none; 200 µm where absent. */
+  /** Width of the dicing lane round the outline, which neighbours on a wafer share; 0 for none, 200 µm where absent. */
   lane: length.optional(),
   /** An array of the chip on a wafer; a single chip where absent. */
   wafer: wafer.optional(),

@@ -1,8 +1,17 @@
 import { area, EndType, FillRule, inflatePaths, JoinType, type Paths64, union } from 'clipper2-ts';
 import { describe, expect, test } from 'vitest';
+import type { MaskOptions } from '../../main/contract/mask.ts';
 import { compensated } from '../../main/export/mask/compensate.ts';
 import { markHalf, markRange, markStep } from '../../main/export/mask/marks.ts';
-import { areaOf, boxOf, flatPaths, perimeterOf, polygon, rectangle } from '../../main/export/mask/shapes.ts';
+import {
+  areaOf,
+  boxOf,
+  flatPaths,
+  moved,
+  perimeterOf,
+  polygon,
+  rectangle,
+} from '../../main/export/mask/shapes.ts';
 import { waferLayout } from '../../main/export/mask/wafer.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { planCavities } from '../../solver/chip/plan.ts';
@@ -246,8 +255,7 @@ describe('wafer', () => {
   const centre = [5e6, 2.5e6] as const;
 
   test('chips lie whole within the edge, none on another, as many as any of the four settings holds', () => {
-    const { centres, pitch } = waferLayout(field, centre, { diameter: 100_000_000, edge: 4_000_000 });
-    expect(pitch).toEqual([12e6, 6e6]);
+    const { centres } = waferLayout(field, centre, { diameter: 100_000_000, edge: 4_000_000 }, [12e6, 6e6]);
     const radius = 46e6;
     for (const [x, y] of centres) {
       for (const [dx, dy] of [
@@ -278,13 +286,92 @@ describe('wafer', () => {
     expect(centres.length).toBe(most);
   });
 
-  test('what does not fit, overlaps or is too much is a problem', () => {
-    const on = (diameter: number, pitch?: [number, number]) =>
-      problem(() => waferLayout(field, centre, { diameter, edge: 0, ...(pitch && { pitch }) }));
-    expect(on(13_000_000).what).toMatch(/does not fit/);
-    expect(on(100_000_000, [11e6, 6e6]).where).toBe('pitch');
-    expect(
-      problem(() => waferLayout({ x0: 0, y0: 0, x1: 1e3, y1: 1e3 }, [0, 0], { diameter: 1e8, edge: 0 })).kind,
-    ).toBe('too-many');
+  test('what does not fit or is too much is a problem', () => {
+    const on = (box: typeof field, diameter: number, pitch: [number, number]) =>
+      problem(() => waferLayout(box, [0, 0], { diameter, edge: 0 }, pitch));
+    expect(on(field, 13_000_000, [12e6, 6e6]).what).toMatch(/does not fit/);
+    expect(on({ x0: 0, y0: 0, x1: 1e3, y1: 1e3 }, 1e8, [1e3, 1e3]).kind).toBe('too-many');
+  });
+
+  /** 20 by 10 mm, two layers; marks of 30 µm lines end 46 of them from where their room begins, with 12 free on either side. */
+  const pair = () =>
+    chipOf({
+      outline: { width: 20_000_000, height: 10_000_000 },
+      channels: [
+        channel('a', [
+          [1000, 1000],
+          [9000, 1000],
+        ]),
+        channel(
+          'b',
+          [
+            [1000, 2000],
+            [9000, 2000],
+          ],
+          100,
+          { layer: 'upper' },
+        ),
+      ],
+    });
+  const ROOM = (46 + 12 + 12) * 30_000;
+  const LANE = 200_000;
+  const on = (options: MaskOptions) =>
+    modelOf(pair(), { wafer: { diameter: 100_000_000, edge: 3_000_000 }, lane: LANE, ...options });
+  const up = (nm: number): number => Math.ceil(nm / 10_000) * 10_000;
+
+  test('without marks a chip takes itself and one lane, half of it drawn on each side', () => {
+    const { planes, wafer, notes } = on({ marks: false });
+    expect(wafer!.pitch).toEqual([20_200_000, 10_200_000]);
+    expect(boxOf(planes[0]!.lane)).toEqual({ x0: -1e5, y0: -1e5, x1: 20.1e6, y1: 10.1e6 });
+    expect(notes.join(' ')).toMatch(/200 µm wide, outside the outline; where two chips meet they share one/);
+    // nothing of one chip on another, and the lane between two is whole
+    const [a, b] = [planes[0]!.lane, planes[0]!.lane.map((shape) => moved(shape, wafer!.pitch[0], 0))];
+    const paths = [...a, ...b].flatMap((shape) => flatPaths(shape, 1));
+    const together = union(paths, FillRule.NonZero).reduce((sum, path) => sum + area(path), 0);
+    expect(together).toBeCloseTo(2 * areaOf(a), -3);
+    expect(union(paths, FillRule.NonZero).filter((path) => area(path) > 0)).toHaveLength(1);
+  });
+
+  test('marks count once between two chips where that holds more of them', () => {
+    const { wafer, planes, notes, field } = on({});
+    expect(wafer!.pitch).toEqual([up(20_000_000 + 2 * LANE + ROOM), 10_200_000]);
+    expect(planes.flatMap(({ marks }) => marks).every((shape) => boxOf([shape])!.x0 > 20_000_000)).toBe(true);
+    expect(notes.join(' ')).toMatch(/Marks stand to the right of each chip/);
+    // every chip whole within the edge, none within another
+    for (const [x, y] of wafer!.centres) {
+      for (const cx of [field.x0 - 10e6, field.x1 - 10e6])
+        for (const cy of [field.y0 - 5e6, field.y1 - 5e6])
+          expect(Math.hypot(x + cx, y + cy)).toBeLessThanOrEqual(47e6);
+    }
+    expect(field.x1 - field.x0).toBeLessThanOrEqual(wafer!.pitch[0]);
+    // on both sides where that costs no chip: of one alone there is no neighbour to share with
+    const alone = on({ wafer: { diameter: 30_000_000, edge: 0 } });
+    expect(alone.wafer!.centres).toHaveLength(1);
+    expect(alone.planes[0]!.marks.some((shape) => boxOf([shape])!.x1 < 0)).toBe(true);
+  });
+
+  test('a pitch that is given is kept; one that is too small says what is needed', () => {
+    const wafer = { diameter: 100_000_000, edge: 3_000_000 };
+    const wide = on({ wafer: { ...wafer, pitch: [30_000_000, 12_000_000] } });
+    expect(wide.wafer!.pitch).toEqual([30_000_000, 12_000_000]);
+    // apart by more than two lanes: each has its own
+    expect(boxOf(wide.planes[0]!.lane)).toEqual({ x0: -2e5, y0: -2e5, x1: 20.2e6, y1: 10.2e6 });
+    expect(wide.notes.join(' ')).not.toMatch(/share one/);
+    const narrow = problem(() => on({ wafer: { ...wafer, pitch: [21_000_000, 12_000_000] } }));
+    expect(narrow.where).toBe('pitch');
+    expect(narrow.what).toBe(
+      'The pitch of 21 mm × 12 mm is too small: a chip with its dicing lane and one set of marks takes 22.5 mm × 10.2 mm.',
+    );
+    expect(narrow.remedy).toMatch(/without alignment marks it is enough/);
+    expect(problem(() => on({ wafer: { ...wafer, pitch: [20_100_000, 12_000_000] } })).remedy).not.toMatch(
+      /without/,
+    );
+  });
+
+  test('a mould is larger by its shrinkage, and so are the pitch and the lane', () => {
+    const { wafer, planes } = on({ marks: false, shrink: 0.02 });
+    expect(wafer!.pitch).toEqual([up(20_200_000 / 0.98), up(10_200_000 / 0.98)]);
+    const { x0, x1 } = boxOf(planes[0]!.lane)!;
+    expect(x1 - x0).toBeCloseTo(wafer!.pitch[0], 3);
   });
 });

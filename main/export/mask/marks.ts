@@ -27,6 +27,8 @@ const CROSS = 8;
 /** Room that one pair takes, in units of line width. */
 export const MARK_WIDTH = 48;
 export const MARK_HEIGHT = 76;
+/** From the lane, and on a wafer from the next chip, to the marks, in units of line width. */
+export const MARK_GAP = 12;
 
 /** Offset of one tooth, in the unit's own length. */
 export const markStep = (unit: number): number => unit * STEP;

@@ -4,8 +4,9 @@ import { planCavities } from '../../../solver/chip/plan.ts';
 import { readGraph } from '../../../solver/chip/read-graph.ts';
 import type { Shape } from '../../../solver/mesh/mesh.ts';
 import { Problem } from '../../../solver/problem/problem.ts';
+import { onWafer } from './array.ts';
 import { compensated } from './compensate.ts';
-import { MARK_HEIGHT, MARK_WIDTH, markHalf } from './marks.ts';
+import { MARK_GAP, MARK_HEIGHT, MARK_WIDTH, markHalf } from './marks.ts';
 import { keyOf } from './names.ts';
 import { commonNotes, layerNotes } from './notes.ts';
 import type { LayerSettings, MaskSettings } from './settings.ts';
@@ -20,7 +21,7 @@ import {
   tidied,
   united,
 } from './shapes.ts';
-import { type WaferLayout, waferLayout } from './wafer.ts';
+import type { WaferLayout } from './wafer.ts';
 
 /**
  * What is drawn, whatever the format: one drawing per layer and one of the holes, as shapes of lines and
@@ -75,9 +76,6 @@ export interface MaskPlane {
 }
 
 export const HOLES = 'ports and vias';
-
-/** From the lane to the marks, in units of their line width. */
-const MARK_GAP = 12;
 
 export function maskModel(
   chip: Chip,
@@ -137,10 +135,21 @@ export function maskModel(
       'Draw a channel first.',
     );
   }
-  const field = united(boxes);
-  const wafer = settings.wafer ? waferLayout(field, centre, settings.wafer) : null;
-  const notes = commonNotes(settings, { drawings, wafer });
-  return { title: chip.name, ...program, settings, planes, centre, field, wafer, notes };
+  const set = settings.wafer
+    ? onWafer(planes, chip.outline, settings, settings.wafer)
+    : { planes, field: united(boxes), wafer: null, shared: { marks: false, lane: false } };
+  const { wafer, shared } = set;
+  const notes = commonNotes(settings, { drawings, wafer, shared });
+  return {
+    title: chip.name,
+    ...program,
+    settings,
+    planes: set.planes,
+    centre,
+    field: set.field,
+    wafer,
+    notes,
+  };
 }
 
 function cavitiesOf(

@@ -1,3 +1,4 @@
+import type { Shared } from './array.ts';
 import { markLegend, markRange } from './marks.ts';
 import type { LayerSettings, MaskSettings } from './settings.ts';
 import type { WaferLayout } from './wafer.ts';
@@ -14,7 +15,15 @@ const mm = (nm: number): string => `${Number((nm / 1e6).toFixed(4))} mm`;
 
 export function commonNotes(
   settings: MaskSettings,
-  { drawings, wafer }: { readonly drawings: number; readonly wafer: WaferLayout | null },
+  {
+    drawings,
+    wafer,
+    shared,
+  }: {
+    readonly drawings: number;
+    readonly wafer: WaferLayout | null;
+    readonly shared: Shared;
+  },
 ): string[] {
   const { polarity, mirror, chordError, marks, markUnit, lane } = settings;
   const notes = [
@@ -27,7 +36,11 @@ export function commonNotes(
       : 'Not mirrored: as the chip is drawn, seen from the side of its channels.',
     `Arcs are true where the format has them; elsewhere chords lie within ${um(chordError)} of them.`,
   ];
-  if (lane > 0) notes.push(`The dicing lane is ${um(lane)} wide, outside the outline.`);
+  if (lane > 0) {
+    notes.push(
+      `The dicing lane is ${um(lane)} wide, outside the outline${shared.lane ? '; where two chips meet they share one' : ''}.`,
+    );
+  }
   if (wafer) {
     const count = wafer.centres.length;
     const chips = count === 1 ? '1 chip' : `${count} chips`;
@@ -39,6 +52,7 @@ export function commonNotes(
     notes.push(
       `${markLegend(markUnit)} Range ±${um(markRange(markUnit))}; set the cross in its window first.`,
     );
+    if (shared.marks) notes.push('Marks stand to the right of each chip; the next one shares them.');
     if (drawings > 2)
       notes.push('Pairs of marks from the top: the first drawing with the second, the third, and so on.');
   } else if (marks) notes.push('No alignment marks: there is only one drawing.');

@@ -20,33 +20,21 @@ export interface WaferLayout {
 }
 
 const MOST_CHIPS = 10_000;
-/** Pitches chosen here are whole multiples of this, nm. */
-const ROUND = 10_000;
 
-const mm = (nm: number): string => `${Number((nm / 1e6).toFixed(3))} mm`;
+export const mm = (nm: number): string => `${Number((nm / 1e6).toFixed(3))} mm`;
 
 /**
  * As many chips as lie wholly within the wafer less its edge ring, on a grid symmetric to its centre:
  * with a chip or the space between two in the centre, whichever holds more. `field` is all that is drawn
- * of one chip, `centre` its point of reference.
+ * of one chip, `centre` its point of reference; chips may lie as close as `pitch` has it.
  */
 export function waferLayout(
   field: Box,
   centre: readonly [number, number],
-  options: WaferOptions,
+  { diameter, edge }: WaferOptions,
+  pitch: readonly [number, number],
 ): WaferLayout {
-  const { diameter, edge } = options;
   const size = [field.x1 - field.x0, field.y1 - field.y0] as const;
-  const closest = size.map((length) => Math.ceil(length / ROUND) * ROUND) as [number, number];
-  const pitch = options.pitch ?? closest;
-  if (pitch[0] < size[0] || pitch[1] < size[1]) {
-    throw new Problem(
-      'range',
-      `The pitch of ${mm(pitch[0])} × ${mm(pitch[1])} is less than one chip with its marks and lane takes, ${mm(size[0])} × ${mm(size[1])}.`,
-      'pitch',
-      'Give a larger pitch, or leave it out.',
-    );
-  }
   const radius = diameter / 2 - edge;
   const area = Math.PI * Math.max(0, radius) ** 2;
   if (area / (pitch[0] * pitch[1]) > MOST_CHIPS) {
