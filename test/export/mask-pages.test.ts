@@ -200,10 +200,10 @@ describe('PDF', () => {
     for (const dpi of [600, 60_000]) {
       const dots = (mm: number): number => Math.round((mm * dpi) / 25.4);
       const y = dots((box.y1 - bar!.y - bar!.height / 2) / 1e6);
-      // one line of dots through the bar, which begins at the page's edge, as far as just beyond its end
-      const grey = painted(file, 1, dpi, ['-x', '0', '-y', String(y), '-W', String(dots(10.05)), '-H', '1']);
+      // one line of dots through the bar, which begins a tenth of an inch from the page's edge
+      const grey = painted(file, 1, dpi, ['-x', '0', '-y', String(y), '-W', String(dots(12.6)), '-H', '1']);
       const dark = grey.data.filter((value) => value < 128).length;
-      expect(bar!.x).toBe(box.x0);
+      expect(bar!.x - box.x0).toBe(2_540_000);
       expect(Math.abs(dark - (10 * dpi) / 25.4), `${dpi} dpi: ${(dark / dpi) * 25.4} mm`).toBeLessThanOrEqual(
         0.5,
       );

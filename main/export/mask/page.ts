@@ -30,6 +30,8 @@ export const POINTS_PER_MM = 72 / 25.4;
 
 const BAR = 10_000_000;
 const BAR_HEIGHT = 200_000;
+/** From the page's edge to bar and notes, so that no printer cuts them: a tenth of an inch, whole dots of any. */
+const MARGIN = 2_540_000;
 /** Ground left round what is drawn. */
 const BORDER = 500_000;
 /** A letter is about this much wider than high; the notes are broken to the page's width by it. */
@@ -44,9 +46,10 @@ export function pageOf(model: MaskModel, plane: MaskPlane): Page {
   if (!settings.labels) return { box: plate, plate, letters, bar: null, lines: [] };
   const width = Math.max(plate.x1 - plate.x0, LEAST_WIDTH);
   const unit = 'Unit: millimetre. True size: the bar is 10 mm long; measure it before use.';
-  const texts = legend(model, [plane], unit, Math.floor(width / (letters * LETTER)));
-  const bar = { x: plate.x0, y: plate.y0 - 2 * letters - BAR_HEIGHT, length: BAR, height: BAR_HEIGHT };
-  const lines = texts.map((text, i) => ({ text, x: plate.x0, y: bar.y - (2 + i * LINE) * letters }));
+  const texts = legend(model, [plane], unit, Math.floor((width - 2 * MARGIN) / (letters * LETTER)));
+  const left = plate.x0 + MARGIN;
+  const bar = { x: left, y: plate.y0 - 2 * letters - BAR_HEIGHT, length: BAR, height: BAR_HEIGHT };
+  const lines = texts.map((text, i) => ({ text, x: left, y: bar.y - (2 + i * LINE) * letters }));
   const low = lines[lines.length - 1]!.y - letters;
   return { box: { x0: plate.x0, x1: plate.x0 + width, y1: plate.y1, y0: low }, plate, letters, bar, lines };
 }
