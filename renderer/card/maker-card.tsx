@@ -4,9 +4,16 @@ import { type ChamberRowWishes, chamberRow } from '../makers/chambers.ts';
 import { type GradientTreeWishes, gradientTree } from '../makers/gradient-tree.ts';
 import { family, familyOf, type Making } from '../makers/made.ts';
 import { type PostWishes, posts } from '../makers/posts.ts';
-import { type SerpentineWishes, serpentine, serpentineReach } from '../makers/serpentine.ts';
+import {
+  readSerpentine,
+  type SerpentineRoom,
+  type SerpentineWishes,
+  serpentine,
+  serpentineReach,
+} from '../makers/serpentine.ts';
 import { type SplitTreeWishes, splitTree } from '../makers/split-tree.ts';
 import { usePage } from '../page/context.tsx';
+import { keepRoom, readRoom } from '../state/serpentine-rooms.ts';
 import { useStore } from '../state/store.ts';
 import { partsOfMade } from '../tools/maker-tools.ts';
 import { lengthFigure } from '../words/figure.ts';
@@ -20,7 +27,7 @@ export function MakerCard({ id }: { readonly id: string }) {
   const { desk } = usePage();
   const chip = useStore(desk.project)!.document.chip;
   const chosen = useStore(desk.view, (view) => view.selection.length);
-  const wishes = wishesOf(chip, id);
+  const wishes = wishesOf(chip, id, readRoom(desk.keptView(), id));
   if (!wishes) return null;
   const all = partsOfMade(family(chip, familyOf(id))).map(refOfPart);
   return (
@@ -39,8 +46,8 @@ export function MakerCard({ id }: { readonly id: string }) {
   );
 }
 
-function wishesOf(chip: Chip, id: string) {
-  const single = serpentine.read(chip, id);
+function wishesOf(chip: Chip, id: string, room: SerpentineRoom) {
+  const single = readSerpentine(chip, id, room);
   if (single) return <SerpentineFields name={id} wishes={single} />;
   const name = familyOf(id);
   if (family(chip, name).channels.length < 2) return null;
@@ -69,7 +76,16 @@ function useRemake<W>(name: string, kind: string, make: (name: string, wishes: W
 const nm = (metres: number): number => Math.round(metres * 1e9);
 
 function SerpentineFields({ name, wishes }: { readonly name: string; readonly wishes: SerpentineWishes }) {
-  const again = useRemake<SerpentineWishes>(name, 'serpentine', serpentine.make);
+  const { desk } = usePage();
+  const remake = useRemake<SerpentineWishes>(name, 'serpentine', serpentine.make);
+  /** What is wished of its room stays wished, also where the length takes less of it. */
+  const again = (next: SerpentineWishes): string | null => {
+    const why = remake(next);
+    const { box, gap, upright } = next;
+    if (why === null)
+      keepRoom(desk, name, { wall: gap, high: upright ? box.right - box.left : box.top - box.bottom });
+    return why;
+  };
   const reach = serpentineReach(wishes);
   return (
     <section aria-label="Serpentine" className="fields">

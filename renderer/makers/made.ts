@@ -1,4 +1,4 @@
-import type { Chamber, Channel, Chip, Port, Target } from '../../solver/chip/chip.ts';
+import type { Chamber, Channel, Chip, Point, Port, Target } from '../../solver/chip/chip.ts';
 
 /** What a maker puts into a chip. */
 export interface Made {
@@ -41,12 +41,37 @@ export function family(chip: Chip, name: string): Made {
   };
 }
 
+/** nm: wishes are read back from places that are whole nanometres, which leaves a few to rounding. */
+const ROUNDING = 8;
+
+const near = (a: readonly Point[], b: readonly Point[]): boolean =>
+  a.length === b.length &&
+  a.every((p, i) => Math.abs(p[0] - b[i]![0]) <= ROUNDING && Math.abs(p[1] - b[i]![1]) <= ROUNDING);
+
+/** Parts by their ids: those that came with a later wish stand last in the chip. */
+const byId = <P extends { readonly id: string }>(parts: readonly P[]): ReadonlyMap<string, P> =>
+  new Map(parts.map((part) => [part.id, part]));
+
 /** Whether what is there has the shape of what would be made: drives, targets and tubing are the user's. */
 export function sameShape(there: Made, made: Made): boolean {
-  const shape = (part: Made): string =>
-    JSON.stringify([
-      part.channels.map((c) => [c.id, c.layer, c.path, c.width, c.bendRadius]),
-      part.chambers.map((c) => [c.id, c.layer, c.outline]),
-    ]);
-  return shape(there) === shape(made);
+  if (there.channels.length !== made.channels.length || there.chambers.length !== made.chambers.length)
+    return false;
+  const channels = byId(there.channels);
+  const chambers = byId(there.chambers);
+  return (
+    made.channels.every((one) => {
+      const other = channels.get(one.id);
+      return (
+        other !== undefined &&
+        one.layer === other.layer &&
+        one.bendRadius === other.bendRadius &&
+        one.width.every((width, end) => Math.abs(width - other.width[end]!) <= ROUNDING) &&
+        near(one.path, other.path)
+      );
+    }) &&
+    made.chambers.every((one) => {
+      const other = chambers.get(one.id);
+      return other !== undefined && one.layer === other.layer && near(one.outline, other.outline);
+    })
+  );
 }

@@ -1,12 +1,15 @@
 import { describe, expect, test } from 'vitest';
 import type { Chip } from '../../solver/chip/chip.ts';
+import { applyEdit } from '../../solver/chip/edit.ts';
+import { remade } from '../card/remake.ts';
+import { toEdit } from '../edits/to-edit.ts';
 import { pathLength } from '../geometry/path.ts';
 import { emptyChip } from '../testing/chips.ts';
 import { chamberRow } from './chambers.ts';
 import { gradientTree } from './gradient-tree.ts';
-import { familyOf, type Made, type Making } from './made.ts';
+import { familyOf, type Made, type Maker, type Making } from './made.ts';
 import { posts } from './posts.ts';
-import { serpentine, serpentineReach } from './serpentine.ts';
+import { readSerpentine, serpentine, serpentineReach } from './serpentine.ts';
 import { splitTree } from './split-tree.ts';
 
 const mm = 1_000_000;
@@ -185,4 +188,131 @@ test('a gradient tree gains one outlet per stage and is read back', () => {
 test('a part knows its family', () => {
   expect(familyOf('tree 1-2-3')).toBe('tree 1');
   expect(familyOf('feed')).toBe('feed');
+});
+
+test('a drawn serpentine can be made longer in its box, with walls as thin as it is wide or as was wished', () => {
+  const wishes = {
+    layer: 'flow',
+    length: 150 * mm,
+    box,
+    width: 200_000,
+    gap: 200_000,
+    bendRadius: 0,
+    upright: false,
+  };
+  const chip = chipOf(made(serpentine.make('s1', wishes)));
+  const { most } = serpentineReach(wishes);
+  const wall = (w: typeof wishes | null) => serpentineReach(w!).most;
+  // its own height is what the length takes of the box: here seven eighths
+  expect(wall(readSerpentine(chip, 's1')) / most).toBeGreaterThan(0.85);
+  expect(wall(readSerpentine(chip, 's1', { high: 20 * mm }))).toBe(most);
+  expect(wall(readSerpentine(chip, 's1', { wall: 400_000, high: 20 * mm }))).toBeLessThan(0.7 * most);
+});
+
+describe('what was made is changed again and again as what it is, whatever the sizes', () => {
+  /** Whole numbers that look like any, the same in each run (Park and Miller, 1988). */
+  const dice = (seed: number) => {
+    let state = seed;
+    return (from: number, to: number): number => {
+      state = (state * 48_271) % 2_147_483_647;
+      return from + (state % (to - from + 1));
+    };
+  };
+  /** Through the card: read, one wish altered, made anew within the chip, read again. */
+  function again<W>(maker: Maker<W>, name: string, first: W, changes: readonly ((wishes: W) => W)[]): void {
+    let chip: Chip = emptyChip();
+    const take = (making: Making): void => {
+      chip = applyEdit(chip, toEdit(chip, remade(chip, name, made(making), 'again')));
+    };
+    take(maker.make(name, first));
+    for (const [i, change] of changes.entries()) {
+      const wishes = maker.read(chip, name);
+      expect(wishes, `before change ${i}`).not.toBeNull();
+      take(maker.make(name, change(wishes!)));
+    }
+    expect(maker.read(chip, name)).not.toBeNull();
+  }
+  const some = dice(7);
+  const boxes = Array.from({ length: 8 }, () => {
+    const [left, bottom] = [some(1, 5 * mm), some(1, 3 * mm)];
+    return { left, bottom, right: left + some(40 * mm, 60 * mm), top: bottom + some(16 * mm, 20 * mm) };
+  });
+  test.each(boxes)('%o', (some) => {
+    again(
+      gradientTree,
+      'gradient 1',
+      {
+        layer: 'flow',
+        box: some,
+        inlets: 2,
+        stages: 3,
+        width: 100_000,
+        mixing: 25 * mm,
+        portDiameter: 750_000,
+      },
+      [
+        (w) => ({ ...w, inlets: 3 }),
+        (w) => ({ ...w, stages: 2 }),
+        (w) => ({ ...w, inlets: 2, stages: 4 }),
+        (w) => ({ ...w, mixing: 17_777_777 }),
+        (w) => ({ ...w, width: 90_001 }),
+      ],
+    );
+    again(
+      splitTree,
+      'tree 1',
+      {
+        layer: 'flow',
+        levels: 2,
+        box: some,
+        trunkWidth: 200_000,
+        leafWidth: 100_000,
+        joining: false,
+        portDiameter: 750_000,
+      },
+      [
+        (w) => ({ ...w, levels: 3 }),
+        (w) => ({ ...w, leafWidth: 77_777 }),
+        (w) => ({ ...w, joining: true }),
+        (w) => ({ ...w, levels: 1 }),
+        (w) => ({ ...w, levels: 4 }),
+      ],
+    );
+    again(
+      chamberRow,
+      'row 1',
+      { layer: 'flow', box: some, count: 5, chamberLength: 3_333_333, channelWidth: 200_000 },
+      [(w) => ({ ...w, count: 7 }), (w) => ({ ...w, chamberLength: 2_222_221 }), (w) => ({ ...w, count: 3 })],
+    );
+    again(
+      posts,
+      'posts 1',
+      {
+        layer: 'flow',
+        box: { ...some, right: some.left + 2_000_003 },
+        gap: 200_000,
+        post: 200_000,
+        along: 400_000,
+      },
+      [(w) => ({ ...w, gap: 155_555 }), (w) => ({ ...w, post: 133_331 }), (w) => ({ ...w, along: 250_001 })],
+    );
+    again(
+      serpentine,
+      'serpentine 1',
+      {
+        layer: 'flow',
+        length: 150 * mm,
+        box: some,
+        width: 200_000,
+        gap: 200_000,
+        bendRadius: 0,
+        upright: false,
+      },
+      [
+        (w) => ({ ...w, length: 133_333_331 }),
+        (w) => ({ ...w, bendRadius: 200_001 }),
+        (w) => ({ ...w, width: 150_001 }),
+      ],
+    );
+  });
 });

@@ -109,7 +109,16 @@ function make(name: string, wishes: SerpentineWishes): Making {
   };
 }
 
-function read(chip: Chip, name: string): SerpentineWishes | null {
+/** What a drawn serpentine does not show of the wishes for it: the box may be higher, the walls may be thinner. */
+export interface SerpentineRoom {
+  /** Least wall, nm. */
+  readonly wall?: Nm;
+  /** Of the box, across the way of the serpentine, nm. */
+  readonly high?: Nm;
+}
+
+/** The wishes of a serpentine as it is drawn, in the room that was wished for it; else walls as wide as itself may be left. */
+export function readSerpentine(chip: Chip, name: string, room: SerpentineRoom = {}): SerpentineWishes | null {
   const channel = chip.channels.find((part) => part.id === name);
   if (!channel || channel.path.length < 6 || channel.width[0] !== channel.width[1]) return null;
   const { path, bendRadius } = channel;
@@ -124,7 +133,7 @@ function read(chip: Chip, name: string): SerpentineWishes | null {
   const [from, to] = upright ? [first[1], last[1]] : [first[0], last[0]];
   if (to <= from) return null;
   const middle = upright ? first[0] : first[1];
-  const high = half + channel.width[0] / 2;
+  const high = Math.max(half + channel.width[0] / 2, (room.high ?? 0) / 2);
   const box: Box = upright
     ? { left: middle - high, right: middle + high, bottom: from, top: to }
     : { left: from, right: to, bottom: middle - high, top: middle + high };
@@ -133,7 +142,10 @@ function read(chip: Chip, name: string): SerpentineWishes | null {
     length: Math.round(pathLength(path, bendRadius)),
     box,
     width: channel.width[0],
-    gap: Math.max(1, Math.floor((to - from) / (legs + 2)) - channel.width[0]),
+    gap: Math.max(
+      1,
+      Math.min(room.wall ?? channel.width[0], Math.floor((to - from) / (legs + 2)) - channel.width[0]),
+    ),
     bendRadius,
     upright,
   };
@@ -145,4 +157,8 @@ function read(chip: Chip, name: string): SerpentineWishes | null {
 /** Lengths are whole nanometres while amplitudes need not be: a few nm of rounding per point. */
 const close = (a: Xy, b: Xy): boolean => Math.abs(a[0] - b[0]) <= 4 && Math.abs(a[1] - b[1]) <= 4;
 
-export const serpentine: Maker<SerpentineWishes> = { kind: 'serpentine', make, read };
+export const serpentine: Maker<SerpentineWishes> = {
+  kind: 'serpentine',
+  make,
+  read: (chip, name) => readSerpentine(chip, name),
+};

@@ -1,7 +1,7 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { type ChipEdit, makeEdit } from '../../solver/chip/edit.ts';
 import { Problem } from '../../solver/problem/problem.ts';
-import { findPart, refOfPart } from '../edits/parts.ts';
+import { boxOfParts, findPart, refOfPart } from '../edits/parts.ts';
 import { toEdit } from '../edits/to-edit.ts';
 import { tidy } from '../geometry/path.ts';
 import type { Live, Solved } from '../solving/solver.ts';
@@ -13,12 +13,21 @@ import type { Workbench } from './workbench.ts';
 /** Beyond this many channels the answer would come too late to be one to what the hand does. */
 const MOST_CHANNELS = 5000;
 
+/**
+ * Times the chip: what is larger is a figure half typed, "50 m" of "50 mm", and would keep the answer to the
+ * whole one waiting.
+ */
+const FAR = 4;
+
 /** The chip as it would be with what a tool shows, and the edit that would make it; null where it makes none. */
 export function wouldBe(
   chip: Chip,
   parts: readonly PartValue[],
 ): { readonly edit: ChipEdit; readonly chip: Chip; readonly drawn: string | null } | null {
   if (parts.length === 0 || chip.channels.length > MOST_CHANNELS) return null;
+  const box = boxOfParts(parts)!;
+  const most = FAR * Math.max(chip.outline.width, chip.outline.height);
+  if (box.right - box.left > most || box.top - box.bottom > most) return null;
   const put = parts.map((part): PartValue => {
     if (part.kind !== 'channel') return part;
     const path = tidy(part.value.path) as typeof part.value.path;

@@ -65,6 +65,18 @@ function freshFamily(scope: Scope, stem: string): string {
 /** The other corner, under what was typed and where the hand points. */
 const farCorner = ({ from, at, typing }: BoxState): Xy => (from && sizedCorner(from, at, typing.texts)) ?? at;
 
+/** The same, for a box that the chip could hold: one far larger would be filled with far too much. */
+function making(maker: BoxMaker, name: string, box: Box, scope: Scope): Making {
+  const { width, height } = scope.chip.outline;
+  const most = 2 * Math.max(width, height);
+  const size = Math.max(box.right - box.left, box.top - box.bottom);
+  return size > most
+    ? {
+        refusal: `That box is ${lengthFigure(size)} long; the chip is ${lengthFigure(Math.max(width, height))}.`,
+      }
+    : maker.make(name, box, scope);
+}
+
 function boxTool(maker: BoxMaker): Tool<BoxState> {
   const start = (scope: Scope): BoxState => ({
     from: null,
@@ -75,11 +87,11 @@ function boxTool(maker: BoxMaker): Tool<BoxState> {
   });
   const finish = (state: BoxState, scope: Scope): Outcome<BoxState> => {
     const name = freshFamily(scope, maker.stem);
-    const making = maker.make(name, boxBetween(state.from!, state.at), scope);
+    const made = making(maker, name, boxBetween(state.from!, state.at), scope);
     const fresh = { ...start(scope), at: state.at };
-    if ('refusal' in making) return { state: fresh, says: making.refusal };
-    const put = partsOfMade(making.made);
-    const { targets } = making.made;
+    if ('refusal' in made) return { state: fresh, says: made.refusal };
+    const put = partsOfMade(made.made);
+    const { targets } = made.made;
     const [first] = put;
     return {
       state: fresh,
@@ -165,9 +177,9 @@ function boxTool(maker: BoxMaker): Tool<BoxState> {
       };
     const corner = farCorner(state);
     const box = boxBetween(state.from, corner);
-    const making = maker.make('preview', box, scope);
+    const made = making(maker, 'preview', box, scope);
     return {
-      parts: 'made' in making ? partsOfMade(making.made) : [],
+      parts: 'made' in made ? partsOfMade(made.made) : [],
       box: [state.from, corner],
       cursor: corner,
       readout: [
@@ -175,11 +187,11 @@ function boxTool(maker: BoxMaker): Tool<BoxState> {
         { name: 'height', figure: lengthFigure(box.top - box.bottom), ...typing(1) },
       ],
       hint:
-        'made' in making
+        'made' in made
           ? 'Click the other corner; the card then sets the rest.'
           : box.right === box.left && box.top === box.bottom
             ? 'Click the other corner, or type its width and height.'
-            : making.refusal,
+            : made.refusal,
     };
   };
   return { name: maker.name, start, on, preview };
