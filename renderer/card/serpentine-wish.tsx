@@ -25,7 +25,7 @@ export function SerpentineWish({
     <>
       <QuantityField
         label="Wanted length"
-        value={length}
+        value={Number(length.toPrecision(6))}
         kind="length"
         unit="mm"
         onAccept={(value) => onLength(Math.round(value * 1e9))}

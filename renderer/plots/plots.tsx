@@ -150,8 +150,9 @@ function RoutePlots() {
   );
 }
 
-/** px: the mark of what is wanted, across its bar. */
-const WANTED = 22;
+/** px: the marks of what is wanted, across their bars, where one stands alone and together. */
+const WANTED = 24;
+const ALL_WANTED = 110;
 const MOST_BARS = 40;
 
 function SplitPlot() {
@@ -175,7 +176,7 @@ function SplitPlot() {
       <Plot
         title={
           asked.length > 0
-            ? 'How the flow splits; a line where it is wanted, as wide up and down as it may be off'
+            ? 'How the flow splits, what is wanted, and how far off it may be'
             : 'How the flow splits'
         }
         across=""
@@ -221,7 +222,7 @@ function SplitPlot() {
             },
             marker: {
               symbol: 'line-ew',
-              size: WANTED,
+              size: Math.max(5, Math.min(WANTED, ALL_WANTED / rows.length)),
               color: look.ink,
               line: { color: look.ink, width: 1.5 },
             },

@@ -45,7 +45,12 @@ export function createWorkbench(desk: Desk): Workbench {
       centre: [Math.round(chip.outline.width / 2), Math.round(chip.outline.height / 2)],
     };
   };
-  const holding = (s: Scope): Hand => hand.get() ?? take(desk.view.get().tool, s);
+  /** Whatever lays a tool down says so in the view: another project is begun with an empty hand. */
+  const holding = (s: Scope): Hand => {
+    const { tool } = desk.view.get();
+    const held = hand.get();
+    return held?.name === tool ? held : take(tool, s);
+  };
 
   return {
     hand,

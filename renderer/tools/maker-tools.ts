@@ -197,12 +197,16 @@ function boxTool(maker: BoxMaker): Tool<BoxState> {
   return { name: maker.name, start, on, preview };
 }
 
-/** Twice the box if it fits, else half of what does: a serpentine one sees as such. */
+/** nm: what is proposed is a round figure. */
+const ROUND = 100_000;
+
+/** Half of what fits: a serpentine one sees as such. */
 export function firstSerpentine(box: Box, scope: Scope): SerpentineWishes {
   const width = scope.habits.channelWidth;
   const asked = { layer: scope.layer, box, width, gap: width, bendRadius: 0, upright: false };
   const { least, most } = serpentineReach(asked);
-  return { ...asked, length: Math.round(Math.min(most, Math.max(least, least + (most - least) / 2))) };
+  const half = Math.round((least + (most - least) / 2) / ROUND) * ROUND;
+  return { ...asked, length: half > least && half < most ? half : Math.round((least + most) / 2) };
 }
 
 export function firstSplitTree(box: Box, scope: Scope): SplitTreeWishes {
