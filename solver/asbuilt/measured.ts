@@ -27,6 +27,8 @@ export const COLUMNS = {
   along: ['along', 'distance'],
   x: ['x', 'right'],
   y: ['y', 'up'],
+  /** Beside a value that is missing: the row was not filled in, and is as drawn. */
+  drawn: ['drawn'],
   note: ['note', 'remark'],
 } as const;
 export type Column = keyof typeof COLUMNS;

@@ -68,6 +68,7 @@ export function readMeasured({ rows, lines }: MeasuredTable, chip: Chip): Measur
         'Quote a cell that holds the separator, or name the column.',
       );
     }
+    if (open(rows[i], head)) continue;
     found.push(readRow(rows[i], lines[i], head, chip));
   }
   if (found.length === 0) {
@@ -81,6 +82,12 @@ export function readMeasured({ rows, lines }: MeasuredTable, chip: Chip): Measur
   return found;
 }
 
+/** Whether a row is one of a table to be filled in, and was not. */
+const open = (row: readonly string[], { at }: Head): boolean =>
+  at.drawn >= 0 &&
+  (row[at.drawn] ?? '').trim() !== '' &&
+  [at.value, at.uncertainty].every((column) => column < 0 || (row[column] ?? '').trim() === '');
+
 function readHead(cells: readonly string[], row: number): Head {
   const at: Record<Column, number> = {
     part: -1,
@@ -90,6 +97,7 @@ function readHead(cells: readonly string[], row: number): Head {
     along: -1,
     x: -1,
     y: -1,
+    drawn: -1,
     note: -1,
   };
   const unit: Partial<Record<Column, string>> = {};
@@ -204,11 +212,16 @@ function readRow(cells: readonly string[], row: number, head: Head, chip: Chip):
   };
 }
 
+/** A name that a spreadsheet would run as a formula, without the apostrophe that keeps it text. */
+const unkept = (text: string): string => text.replace(/^'(?=[=+\-@\uff1d\uff0b\uff0d\uff20])/, '');
+
 function partOf(
-  text: string,
+  written: string,
   row: number,
   chip: Chip,
 ): { readonly of: 'layer' | 'channel'; readonly id: string } {
+  const known = [...chip.channels, ...chip.layers].some(({ id }) => id === written);
+  const text = known ? written : unkept(written);
   if (text === '')
     refuse(
       'missing',

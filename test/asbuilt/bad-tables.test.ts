@@ -1,9 +1,12 @@
 import { expect, test } from 'vitest';
+import { tableCsv } from '../../main/export/note/tables.ts';
 import { readTable } from '../../main/measurements/read-table.ts';
 import { madeChip } from '../../solver/asbuilt/made.ts';
 import { readMeasured } from '../../solver/asbuilt/read-measured.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { Problem } from '../../solver/problem/problem.ts';
+import { solve } from '../../solver/solve.ts';
+import { awkwardChip, noteFor } from '../export/note-chips.ts';
 import { cross } from './chips.ts';
 
 const made = (text: string, chip: Chip = cross()) => madeChip(chip, readMeasured(readTable(text), chip));
@@ -299,4 +302,30 @@ test('commas, semicolons and tabs, CRLF, a byte order mark, quotes and breaks in
 test('rows are counted as the file has them, blank and broken ones too', () => {
   const text = 'part,what,value,note\n\na,width,1000,"one\ntwo"\n\nb,widht,1000,\n';
   expect(() => made(text)).toThrow(/row 6, column what/);
+});
+
+test('the table of the note, filled in, is what was measured; rows left empty are as drawn', async () => {
+  const chip = awkwardChip();
+  const note = noteFor(chip, await solve(chip, { junctions: 'ideal' }));
+  const tables = note.sections.flatMap(({ blocks }) =>
+    blocks.flatMap((block) => (block.kind === 'table' ? [block.table] : [])),
+  );
+  const csv = tableCsv(tables.find(({ id }) => id === 'measured')!);
+  const lines = csv.split('\r\n');
+  expect(() => readMeasured(readTable(csv), chip)).toThrow(/no measurement/);
+  // one with a name that a spreadsheet would run, one in signs of another script
+  const fill = (id: string, reading: string): void => {
+    const k = lines.findIndex((line) => line.includes(id));
+    const rest = /^(.*),,,,$/.exec(lines[k]!)![1]!;
+    lines[k] = `${rest},${reading},0.5,,by microscope`;
+  };
+  fill('=feed', '604');
+  fill('τ layer', '49');
+  const measured = readMeasured(readTable(lines.join('\r\n')), chip);
+  expect(measured).toMatchObject([
+    { of: 'layer', id: 'τ layer', what: 'depth' },
+    { of: 'channel', id: '=feed', what: 'width' },
+  ]);
+  expect(measured[1]!.value).toBeCloseTo(604e-6, 15);
+  expect(measured[1]!.uncertainty).toBeCloseTo(0.5e-6, 15);
 });

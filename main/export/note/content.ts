@@ -18,18 +18,12 @@ import {
 import { type Paper, planPicture, size } from './drawing.ts';
 import { driftTable, drivesTable, startWords } from './drives.ts';
 import { channelsSection, channelsTable, layersTable, portsTable, processBlocks } from './making.ts';
+import { measuredSection } from './measured.ts';
 import type { Picture } from './picture.ts';
 import { routesSection } from './routes.ts';
 import { sectionPicture } from './section-picture.ts';
 import { splitTable, splitWords } from './split.ts';
-import {
-  cautionsSection,
-  fluidWords,
-  madeSection,
-  measuredSection,
-  signaturesSection,
-  trustSection,
-} from './trust.ts';
+import { cautionsSection, fluidWords, madeSection, signaturesSection, trustSection } from './trust.ts';
 
 /** The fabrication note as plain data: what the mask shop, the clean room and the person at the pump need. */
 export interface Note {

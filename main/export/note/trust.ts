@@ -3,19 +3,7 @@ import type { Chip } from '../../../solver/chip/chip.ts';
 import type { Making, Result } from '../../../solver/chip/result.ts';
 import { formatQuantity } from '../../../solver/chip/units-format.ts';
 import type { Finding } from '../../../solver/problem/finding.ts';
-import {
-  type Block,
-  blank,
-  figure,
-  placed,
-  plain,
-  planFigures,
-  type Run,
-  type Section,
-  strong,
-  unbroken,
-  words,
-} from './blocks.ts';
+import { type Block, figure, placed, plain, type Run, type Section, strong, unbroken } from './blocks.ts';
 
 /** What was found, what was accepted and why, how far the numbers can be trusted, and what is to be minded. */
 
@@ -268,74 +256,6 @@ export function cautionsSection({ rating }: Chip, result: Result): Section {
     blocks: [
       { kind: 'words', runs: pressure },
       { kind: 'list', items: CAUTIONS.map((text) => [text]) },
-    ],
-  };
-}
-
-/** Measured outlets beyond this many are for a spreadsheet. */
-const MOST_MEASURED = 48;
-
-export function measuredSection(chip: Chip, result: Result): Section {
-  const outlets = result.ports.filter(({ flow }) => flow !== null && flow < 0).slice(0, MOST_MEASURED);
-  const { layers } = chip;
-  return {
-    id: 'measured',
-    title: 'Measured on the made chip',
-    blocks: [
-      {
-        kind: 'table',
-        table: {
-          id: 'measured-layers',
-          title: 'Depths and widths',
-          rows: layers.length,
-          columns: [
-            words(
-              'layer',
-              layers.map(({ id }) => id),
-            ),
-            planFigures(
-              'depth drawn',
-              layers.map(({ depth }) => depth),
-              'um',
-            ),
-            blank('measured', layers.length, 'um'),
-            blank('±', layers.length, 'um'),
-            blank('channel no.', layers.length),
-            blank('width measured', layers.length, 'um'),
-            blank('±', layers.length, 'um'),
-            blank('fillet', layers.length, 'um'),
-          ],
-        },
-      },
-      ...(outlets.length > 0
-        ? [
-            {
-              kind: 'table',
-              table: {
-                id: 'measured-flows',
-                title: 'Flows',
-                rows: outlets.length,
-                columns: [
-                  words(
-                    'outlet',
-                    outlets.map(({ id }) => id),
-                  ),
-                  words(
-                    'reckoned',
-                    outlets.map(({ flow }) => formatQuantity(-flow!, 'flow')),
-                  ),
-                  words(
-                    'share',
-                    outlets.map(({ share }) => (share === null ? '' : formatQuantity(share, 'share'))),
-                  ),
-                  blank('measured', outlets.length),
-                  blank('±', outlets.length),
-                  blank('how, and by whom', outlets.length),
-                ],
-              },
-            } as const,
-          ]
-        : []),
     ],
   };
 }
