@@ -26,8 +26,8 @@ export interface GridProps {
 }
 
 /**
- * A table as an ARIA grid with one tab stop: arrows move the cell at hand, Enter edits or chooses, Space
- * chooses. Only rows in view are in the page, however many there are.
+ * A table as an ARIA grid with one tab stop: arrows move the cell at hand, with Shift they choose on the way,
+ * Enter edits or chooses, Space chooses. Only rows in view are in the page, however many there are.
  */
 export function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
   const { desk, commands } = usePage();
@@ -109,9 +109,21 @@ export function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
     const left = before < element.scrollLeft + EDGE ? before - EDGE : Math.max(after, element.scrollLeft);
     element.scrollTo({ top, left });
   };
+  /** The row from which Shift goes on to others. */
+  const anchor = useRef(0);
+  const chooseTo = (r: number): void => {
+    const [from, to] = [Math.min(anchor.current, r), Math.max(anchor.current, r)];
+    const refs = rows.slice(Math.max(0, from), to + 1).map((entry) => entry.ref);
+    const parts = refs.filter((ref) => ref !== 'chip' && !ref.startsWith('route:'));
+    // it is where the hand is already
+    const next = [...new Set(parts)];
+    followed.current = next;
+    desk.view.patch({ selection: next, panel: 'card' });
+  };
   const choose = (r: number, add: boolean): void => {
     const ref = rows[r]?.ref;
     if (!ref || ref === 'chip') return;
+    anchor.current = r;
     if (add)
       desk.view.patch({
         selection: chosen.has(ref) ? selection.filter((other) => other !== ref) : [...selection, ref],
@@ -158,8 +170,14 @@ export function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
     };
     const move = moves[event.key];
     const mod = event.ctrlKey || event.metaKey;
-    if (move && (!mod || event.key === 'Home' || event.key === 'End')) go(...move);
-    else if (event.key === 'Enter' || event.key === 'F2') {
+    if (move && (!mod || event.key === 'Home' || event.key === 'End')) {
+      go(...move);
+      if (event.shiftKey && move[0] !== at.row) {
+        // what is at hand when Shift begins is the first of them
+        if (!chosen.has(rows[anchor.current]?.ref ?? '')) anchor.current = Math.max(0, at.row);
+        chooseTo(Math.max(0, Math.min(rows.length - 1, move[0])));
+      }
+    } else if (event.key === 'Enter' || event.key === 'F2') {
       if (at.row < 0) turn(place);
       else if (column?.edits) edit();
       else choose(row, false);
@@ -225,7 +243,7 @@ export function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
                 height: `${tall}px`,
                 transform: `translateY(${r * tall}px)`,
               }}
-              onClick={(event) => choose(r, event.shiftKey || event.ctrlKey || event.metaKey)}
+              onClick={(event) => (event.shiftKey ? chooseTo(r) : choose(r, event.ctrlKey || event.metaKey))}
             >
               {columns.map((own, c) => {
                 const i = shown[c]!;

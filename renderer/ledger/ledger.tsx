@@ -70,6 +70,7 @@ export function Ledger() {
             type="search"
             aria-label="Filter the table"
             placeholder="Filter"
+            title="Words, or a column with a figure: shear > 1.5, width <= 120"
             value={words}
             onChange={(event) => setWords(event.target.value)}
             onKeyDown={(event) => {

@@ -68,3 +68,27 @@ test('dropping a port drops what spoke of it, and undoing brings both back', () 
   expect(next.targets).toEqual([]);
   expect(makeEdit(next, inverse).chip).toEqual(chip);
 });
+
+test('a filter takes a column with a figure, bare in its own unit or with one, and words beside it', () => {
+  const table: Table = {
+    columns: [
+      { id: 'name', head: 'channel' },
+      { id: 'width', head: 'width', kind: 'length', unit: 'um' },
+      { id: 'shear', head: 'peak shear', kind: 'stress', unit: 'Pa' },
+    ],
+    rows: [
+      { ref: 'channel:a', cells: ['feed a', 120e-6, 0.4] },
+      { ref: 'channel:b', cells: ['feed b', 200e-6, 1.8] },
+      { ref: 'channel:c', cells: ['neck', 80e-6, null] },
+    ],
+  };
+  const found = (words: string) => filtered(table, words).map((row) => row.cells[0]);
+  expect(found('width<=120')).toEqual(['feed a', 'neck']);
+  expect(found('width < 120')).toEqual(['neck']);
+  expect(found('width = 0.2mm feed')).toEqual(['feed b']);
+  expect(found('shear > 500mPa')).toEqual(['feed b']);
+  // what is not known is neither more nor less
+  expect(found('shear >= 0')).toEqual(['feed a', 'feed b']);
+  // no such column, no figure: a word like others
+  expect(found('colour>3')).toEqual([]);
+});

@@ -1,4 +1,5 @@
-import { inUnit, type Kind } from '../../solver/chip/units.ts';
+import { inUnit, type Kind, parseQuantity } from '../../solver/chip/units.ts';
+import { ratioToNumber } from '../../solver/chip/units-exact.ts';
 import { unitInPrint } from '../../solver/chip/units-format.ts';
 import type { Ref } from '../state/ref.ts';
 import { unitFor } from '../words/figure.ts';
@@ -17,7 +18,7 @@ export interface Column {
   /** Significant digits of the largest figure, where fewer say enough. */
   readonly digits?: number;
   /** What is typed into a cell is this quantity of the row's part. */
-  readonly edits?: 'name' | 'width' | 'hole' | 'wanted' | 'within';
+  readonly edits?: 'name' | 'drive' | 'width' | 'length' | 'hole' | 'wanted';
   /** Text of whole sentences, which may take more lines than one. */
   readonly sentence?: true;
 }
@@ -95,16 +96,51 @@ export function cellText(cell: Cell | undefined, column: Column, { unit, decimal
 export const headText = (column: Column, { unit }: Writing): string =>
   unit === '' ? column.head : `${column.head}, ${unitInPrint(unit)}`;
 
-/** Rows whose text holds every word of the filter. */
+/** "shear>1.5", "width<=120um": a column by a word of its head, and what its figure is to be. */
+const COMPARED = /^(\p{L}[^<>=]*)(<=|>=|<|>|=)(.+)$/u;
+
+/** What a row's figures must be under one word of the filter; null where the word is just a word. */
+function comparison(table: Table, word: string): ((row: Row) => boolean) | null {
+  const found = COMPARED.exec(word);
+  if (!found) return null;
+  const [, name, sign, text] = found as unknown as [string, string, string, string];
+  const index = table.columns.findIndex(
+    ({ id, head, kind }) =>
+      kind && [id, ...head.toLowerCase().split(/\s+/)].some((part) => part.startsWith(name.toLowerCase())),
+  );
+  const column = table.columns[index];
+  if (!column?.kind) return null;
+  const { unit } = writingOf(column, table.rows, index);
+  const parsed = parseQuantity(text, column.kind, unit);
+  if (!parsed.ok) return null;
+  const wanted = ratioToNumber(parsed.exact);
+  // as near as a figure is shown
+  const close = 1e-9 * Math.abs(wanted);
+  return ({ cells }) => {
+    const value = cells[index];
+    if (typeof value !== 'number') return false;
+    const off = value - wanted;
+    if (Math.abs(off) <= close) return sign.includes('=');
+    return off > 0 ? sign.startsWith('>') : sign.startsWith('<');
+  };
+}
+
+/** Rows whose text holds every word of the filter, and whose figures are as it says. */
 export function filtered(table: Table, words: string): readonly Row[] {
-  const wanted = words.toLowerCase().split(/\s+/).filter(Boolean);
+  const wanted = words
+    // a comparison may be written with spaces
+    .replace(/\s*(<=|>=|<|>|=)\s*/g, '$1')
+    .split(/\s+/)
+    .filter(Boolean);
   if (wanted.length === 0) return table.rows;
+  // units are not lowered: M is not m
+  const tests = wanted.map((word) => comparison(table, word) ?? word.toLowerCase());
   return table.rows.filter((row) => {
     const text = row.cells
       .filter((cell) => typeof cell === 'string')
       .join(' ')
       .toLowerCase();
-    return wanted.every((word) => text.includes(word));
+    return tests.every((one) => (typeof one === 'string' ? text.includes(one) : one(row)));
   });
 }
 

@@ -59,7 +59,7 @@ function ports(chip: Chip, result: Result | null): Table {
   const wish = byFlow ? ({ kind: 'flow' } as const) : ({ kind: 'share', unit: '%' } as const);
   const columns: Column[] = [
     { ...NAME, head: 'port' },
-    { id: 'drive', head: 'drive' },
+    { id: 'drive', head: 'drive', edits: 'drive' },
     { id: 'wanted', head: 'wanted', ...wish, edits: 'wanted' },
     { id: 'got', head: 'got', ...wish },
     { id: 'off', head: 'off', kind: 'share', unit: '%', signed: true },
@@ -117,7 +117,7 @@ function channels(chip: Chip, result: Result | null): Table {
     { ...NAME, head: 'channel' },
     { id: 'layer', head: 'layer' },
     { id: 'width', head: 'width', kind: 'length', unit: 'um', edits: 'width' },
-    { id: 'length', head: 'length', kind: 'length', unit: 'mm' },
+    { id: 'length', head: 'length', kind: 'length', unit: 'mm', edits: 'length' },
     { id: 'flow', head: 'flow', kind: 'flow' },
     { id: 'share', head: 'share', kind: 'share', unit: '%' },
     { id: 'share band', head: '± share', kind: 'share', unit: '%', digits: 2 },
