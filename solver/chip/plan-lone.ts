@@ -1,5 +1,5 @@
 import type { Edge } from '../mesh/mesh.ts';
-import { bodyBox, type PlanBox } from './geometry/body-box.ts';
+import { bodyBox } from './geometry/body-box.ts';
 import { type Curve, part, tangentAt } from './geometry/curve.ts';
 import type { PlanBody } from './plan.ts';
 import type { Drawing } from './read-graph-drawing.ts';
@@ -28,7 +28,7 @@ export function loneOutline(drawing: Drawing, strip: Strip): Edge[] | undefined 
   const end = elements.first[strip.channel + 1]!;
   const first = drawing.elementAt(strip.channel, from);
   const sides: Side[] = [];
-  const boxes: PlanBox[] = [];
+  let boxes = 0;
   for (let id = first; id < end; id++) {
     const e = elements.at(id);
     const last = e.s1 >= to || id + 1 === end;
@@ -44,10 +44,10 @@ export function loneOutline(drawing: Drawing, strip: Strip): Edge[] | undefined 
       if (1 / Math.abs(c.curvature) <= Math.max(h0, h1) + ROOM) return undefined;
       if (Math.abs(turn) > WIDEST_TURN) return undefined;
     }
-    if (boxes.length >= MANY) return undefined;
-    const box = bodyBox(c, Math.max(h0, h1), ROOM);
-    for (let k = 0; k + 1 < boxes.length; k++) if (meet(boxes[k]!, box)) return undefined;
-    boxes.push(box);
+    if (boxes >= MANY) return undefined;
+    bodyBox(c, Math.max(h0, h1), ROOM, BOXES, 4 * boxes);
+    for (let k = 0; k + 1 < boxes; k++) if (meet(4 * k, 4 * boxes)) return undefined;
+    boxes += 1;
     const before = sides[sides.length - 1];
     // Lines that go straight on, and arcs that go round on, are one side.
     if (before && goesOn(before.last, c)) {
@@ -57,22 +57,20 @@ export function loneOutline(drawing: Drawing, strip: Strip): Edge[] | undefined 
     } else sides.push({ first: c, last: c, turn, h0, h1 });
     if (last) break;
   }
-  const right = sides.map(({ first: c, turn, h0 }) =>
-    edge(c.x0 + c.uy * h0, c.y0 - c.ux * h0, Math.tan(turn / 4)),
-  );
-  const left = sides.toReversed().map(({ last: c, turn, h1 }) => {
-    const [ux, uy] = tangentAt(c, c.length);
-    return edge(c.x1 - uy * h1, c.y1 + ux * h1, -Math.tan(turn / 4));
-  });
-  const { first: start, h0 } = sides[0]!;
-  const { last: stop, h1 } = sides[sides.length - 1]!;
+  const loop: Edge[] = [];
+  for (const { first: c, turn, h0 } of sides)
+    loop.push(edge(c.x0 + c.uy * h0, c.y0 - c.ux * h0, Math.tan(turn / 4)));
+  const { last: stop, h1: stopHalf } = sides[sides.length - 1]!;
   const [vx, vy] = tangentAt(stop, stop.length);
-  return fromLeast([
-    ...right,
-    edge(stop.x1 + vy * h1, stop.y1 - vx * h1, 0, strip.tagTo),
-    ...left,
-    edge(start.x0 - start.uy * h0, start.y0 + start.ux * h0, 0, strip.tagFrom),
-  ]);
+  loop.push(edge(stop.x1 + vy * stopHalf, stop.y1 - vx * stopHalf, 0, strip.tagTo));
+  for (let k = sides.length - 1; k >= 0; k--) {
+    const { last: c, turn, h1 } = sides[k]!;
+    const [ux, uy] = tangentAt(c, c.length);
+    loop.push(edge(c.x1 - uy * h1, c.y1 + ux * h1, -Math.tan(turn / 4)));
+  }
+  const { first: start, h0 } = sides[0]!;
+  loop.push(edge(start.x0 - start.uy * h0, start.y0 + start.ux * h0, 0, strip.tagFrom));
+  return fromLeast(loop);
 }
 
 /** Elements that have one wall on either side in common. */
@@ -92,8 +90,13 @@ function goesOn(a: Curve, b: Curve): boolean {
 
 const edge = (x: number, y: number, bulge: number, tag = 0): Edge => ({ x, y, bulge, tag });
 
-const meet = (a: PlanBox, b: PlanBox): boolean =>
-  a[0] <= b[2] && b[0] <= a[2] && a[1] <= b[3] && b[1] <= a[3];
+const BOXES = new Float64Array(4 * MANY);
+
+const meet = (a: number, b: number): boolean =>
+  BOXES[a]! <= BOXES[b + 2]! &&
+  BOXES[b]! <= BOXES[a + 2]! &&
+  BOXES[a + 1]! <= BOXES[b + 3]! &&
+  BOXES[b + 1]! <= BOXES[a + 3]!;
 
 function fromLeast(loop: Edge[]): Edge[] {
   let k = 0;

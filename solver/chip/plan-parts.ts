@@ -1,8 +1,9 @@
 import Flatbush from 'flatbush';
 import { twiceArea } from '../mesh/check-shape.ts';
 import type { Edge, Shape } from '../mesh/mesh.ts';
-import { bodyBox, type PlanBox } from './geometry/body-box.ts';
+import { bodyBox } from './geometry/body-box.ts';
 import { part } from './geometry/curve.ts';
+import { H0, H1, S0, S1, STRIDE, TURN1 } from './geometry/elements.ts';
 import type { PlanBody } from './plan.ts';
 import type { Drawing } from './read-graph-drawing.ts';
 
@@ -23,13 +24,51 @@ const ROOM = 10;
 
 type Strip = PlanBody & { kind: 'strip' };
 
-/** Something that takes room: an element of a strip, or another body. */
-interface Item {
-  /** Index of the body that it is part of. */
-  readonly body: number;
+/** What takes room: elements of strips, and other bodies. */
+class Items {
+  count = 0;
+  /** Index of the body that each is part of. */
+  body = new Int32Array(1024);
   /** Number of the element; -1 for other bodies. */
-  readonly element: number;
-  readonly box: PlanBox;
+  element = new Int32Array(1024);
+  /** Four numbers each, as `bodyBox` gives them. */
+  boxes = new Float64Array(4096);
+
+  /** Adds one and returns where its box goes. */
+  add(body: number, element: number): number {
+    const at = this.count;
+    if (at === this.body.length) this.#grow();
+    this.body[at] = body;
+    this.element[at] = element;
+    this.count = at + 1;
+    return 4 * at;
+  }
+
+  addSquare(body: number, x: number, y: number, reach: number): void {
+    const at = this.add(body, -1);
+    this.boxes[at] = x - reach;
+    this.boxes[at + 1] = y - reach;
+    this.boxes[at + 2] = x + reach;
+    this.boxes[at + 3] = y + reach;
+  }
+
+  index(): Flatbush {
+    const b = this.boxes;
+    const index = new Flatbush(this.count);
+    for (let at = 0; at < 4 * this.count; at += 4) index.add(b[at]!, b[at + 1]!, b[at + 2]!, b[at + 3]!);
+    index.finish();
+    return index;
+  }
+
+  #grow(): void {
+    const { body, element, boxes } = this;
+    this.body = new Int32Array(2 * body.length);
+    this.body.set(body);
+    this.element = new Int32Array(2 * body.length);
+    this.element.set(element);
+    this.boxes = new Float64Array(8 * body.length);
+    this.boxes.set(boxes);
+  }
 }
 
 /**
@@ -46,155 +85,218 @@ export function unitedInParts(
   if (bodies.length < FEW) return undefined;
   const pieces = cut(drawing, bodies);
   if (pieces.length === bodies.length) return undefined;
-  const loops = joined(groups(drawing, pieces).flatMap((some) => unite(some).flat()));
+  const parts: (readonly Edge[])[] = [];
+  for (const some of groups(drawing, pieces)) {
+    for (const shape of unite(some)) for (const loop of shape) parts.push(loop);
+  }
+  const loops = joined(parts);
   if (!loops) return undefined;
-  const outer = loops.filter((loop) => twiceArea(loop) > 0);
-  if (outer.length !== 1) return undefined;
-  return [outer[0]!, ...loops.filter((loop) => loop !== outer[0])];
+  const shape: Edge[][] = [];
+  let outer: Edge[] | undefined;
+  for (const loop of loops) {
+    if (twiceArea(loop) <= 0) shape.push(loop);
+    else if (outer) return undefined;
+    else outer = loop;
+  }
+  return outer && [outer, ...shape];
+}
+
+interface Cut {
+  /** Distance along the channel. */
+  readonly s: number;
+  readonly tag: number;
 }
 
 /** The bodies with strips cut in two wherever they can be; both sides of a cut bear its number. */
 function cut(drawing: Drawing, bodies: readonly PlanBody[]): PlanBody[] {
   const items = itemsOf(drawing, bodies);
-  const index = indexOf(items);
+  const index = items.index();
   let tag = 0;
-  const places = new Map<number, { s: number; tag: number }[]>();
-  items.forEach(({ body, element }, i) => {
-    if (element < 0) return;
-    const e = drawing.elements.at(element);
-    const half = Math.max(e.h0, e.h1);
-    const { length, ux, uy, x0, y0, curvature } = e.curve;
-    if (curvature !== 0 || length < LONG * half) return;
-    const [mx, my] = [x0 + (ux * length) / 2, y0 + (uy * length) / 2];
-    const [dx, dy] = [Math.abs(uy) * half + ROOM, Math.abs(ux) * half + ROOM];
-    const near = index.search(mx - dx, my - dy, mx + dx, my + dy);
-    if (near.length !== 1 || near[0] !== i) return;
-    tag += 1;
-    const list = places.get(body) ?? [];
-    places.set(body, list);
-    list.push({ s: (e.s0 + e.s1) / 2, tag });
-  });
-  return bodies.flatMap((body, i) => {
-    const cuts = places.get(i);
-    if (!cuts || body.kind !== 'strip') return [body];
-    const inside = cuts.filter(({ s }) => s > body.from && s < body.to).sort((a, b) => a.s - b.s);
-    const parts: Strip[] = [];
-    let from = { s: body.from, tag: body.tagFrom };
-    for (const to of [...inside, { s: body.to, tag: body.tagTo }]) {
-      parts.push({ ...body, from: from.s, to: to.s, tagFrom: from.tag, tagTo: to.tag });
-      from = to;
+  // items come body by body
+  let item = 0;
+  const parts: PlanBody[] = [];
+  for (let i = 0; i < bodies.length; i++) {
+    const cuts: Cut[] = [];
+    for (; item < items.count && items.body[item] === i; item++) {
+      const s = cutAt(drawing, items.element[item]!, item, index);
+      if (Number.isNaN(s)) continue;
+      tag += 1;
+      cuts.push({ s, tag });
     }
-    return parts;
-  });
+    addParts(bodies[i]!, cuts, parts);
+  }
+  return parts;
+}
+
+/** Where along its channel an element can be cut; NaN where it cannot. */
+function cutAt({ elements }: Drawing, element: number, item: number, index: Flatbush): number {
+  if (element < 0) return Number.NaN;
+  const { curve: c, h0, h1, s0, s1 } = elements.at(element);
+  const half = Math.max(h0, h1);
+  if (c.curvature !== 0 || c.length < LONG * half) return Number.NaN;
+  const mx = c.x0 + (c.ux * c.length) / 2;
+  const my = c.y0 + (c.uy * c.length) / 2;
+  const dx = Math.abs(c.uy) * half + ROOM;
+  const dy = Math.abs(c.ux) * half + ROOM;
+  const near = index.search(mx - dx, my - dy, mx + dx, my + dy);
+  return near.length === 1 && near[0] === item ? (s0 + s1) / 2 : Number.NaN;
+}
+
+/** What is left of a body between its cuts, which come in the order of the channel. */
+function addParts(body: PlanBody, cuts: readonly Cut[], parts: PlanBody[]): void {
+  if (body.kind !== 'strip') {
+    parts.push(body);
+    return;
+  }
+  const { kind, channel } = body;
+  let from = body.from;
+  let tagFrom = body.tagFrom;
+  for (const { s, tag } of cuts) {
+    if (s <= body.from || s >= body.to) continue;
+    parts.push({ kind, channel, from, to: s, tagFrom, tagTo: tag });
+    from = s;
+    tagFrom = tag;
+  }
+  parts.push({ kind, channel, from, to: body.to, tagFrom, tagTo: body.tagTo });
 }
 
 /** Bodies that may touch one another, taken together; the two sides of a cut do not count as touching. */
 function groups(drawing: Drawing, bodies: readonly PlanBody[]): PlanBody[][] {
   const items = itemsOf(drawing, bodies);
-  const index = indexOf(items);
-  const root = bodies.map((_, i) => i);
-  const find = (i: number): number => {
-    while (root[i] !== i) {
-      root[i] = root[root[i]!]!;
-      i = root[i]!;
+  const { body, element, boxes } = items;
+  const index = items.index();
+  const root = new Int32Array(bodies.length);
+  for (let i = 0; i < root.length; i++) root[i] = i;
+  for (let i = 0; i < items.count; i++) {
+    const at = 4 * i;
+    for (const k of index.search(boxes[at]!, boxes[at + 1]!, boxes[at + 2]!, boxes[at + 3]!)) {
+      if (k <= i || body[k] === body[i]) continue;
+      if (element[i]! >= 0 && element[k] === element[i]) continue;
+      root[rootOf(root, body[i]!)] = rootOf(root, body[k]!);
     }
-    return i;
-  };
-  items.forEach((item, i) => {
-    const [x0, y0, x1, y1] = item.box;
-    for (const k of index.search(x0, y0, x1, y1)) {
-      const other = items[k]!;
-      if (k <= i || other.body === item.body) continue;
-      if (item.element >= 0 && other.element === item.element) continue;
-      root[find(item.body)] = find(other.body);
+  }
+  const byRoot = new Array<PlanBody[] | undefined>(bodies.length).fill(undefined);
+  const found: PlanBody[][] = [];
+  for (let i = 0; i < bodies.length; i++) {
+    const r = rootOf(root, i);
+    let group = byRoot[r];
+    if (!group) {
+      group = [];
+      byRoot[r] = group;
+      found.push(group);
     }
-  });
-  const byRoot = new Map<number, PlanBody[]>();
-  bodies.forEach((body, i) => {
-    const list = byRoot.get(find(i));
-    if (list) list.push(body);
-    else byRoot.set(find(i), [body]);
-  });
-  return [...byRoot.values()];
+    group.push(bodies[i]!);
+  }
+  return found;
 }
 
-function indexOf(items: readonly Item[]): Flatbush {
-  const index = new Flatbush(items.length);
-  for (const { box } of items) index.add(...box);
-  index.finish();
-  return index;
+function rootOf(root: Int32Array, body: number): number {
+  let i = body;
+  while (root[i] !== i) {
+    root[i] = root[root[i]!]!;
+    i = root[i]!;
+  }
+  return i;
 }
 
-function itemsOf(drawing: Drawing, bodies: readonly PlanBody[]): Item[] {
-  const items: Item[] = [];
-  bodies.forEach((body, i) => {
+function itemsOf(drawing: Drawing, bodies: readonly PlanBody[]): Items {
+  const items = new Items();
+  for (let i = 0; i < bodies.length; i++) {
+    const body = bodies[i]!;
     if (body.kind === 'strip') addElements(drawing, body, i, items);
-    else items.push({ body: i, element: -1, box: boxOf(drawing, body) });
-  });
+    else addBody(drawing, body, i, items);
+  }
   return items;
 }
 
-function addElements(drawing: Drawing, { channel, from, to }: Strip, body: number, items: Item[]): void {
-  const { elements } = drawing;
-  for (let id = elements.first[channel]!; id < elements.first[channel + 1]!; id++) {
-    const e = elements.at(id);
-    if (e.s1 <= from || e.s0 >= to) continue;
-    const c = e.curve;
-    const [low, high] = [Math.max(0, from - e.s0), Math.min(c.length, to - e.s0)];
-    const half = Math.max(e.h0, e.h1);
+function addElements({ elements }: Drawing, strip: Strip, body: number, items: Items): void {
+  const { channel, from, to } = strip;
+  const end = elements.first[channel + 1]!;
+  const { data } = elements;
+  for (let id = elements.first[channel]!; id < end; id++) {
+    const k = id * STRIDE;
+    const s0 = data[k + S0]!;
+    const s1 = data[k + S1]!;
+    if (s1 <= from || s0 >= to) continue;
+    const c = elements.curve(id);
+    const half = Math.max(data[k + H0]!, data[k + H1]!);
     // an arc counts whole: cuts are in straight stretches
-    const box = bodyBox(c.curvature === 0 ? part(c, low, high) : c, half, ROOM);
-    items.push({ body, element: id, box });
+    const covered = c.curvature === 0 ? part(c, Math.max(0, from - s0), Math.min(c.length, to - s0)) : c;
+    const at = items.add(body, id);
+    bodyBox(covered, half, ROOM, items.boxes, at);
     // a mitred corner reaches up to two half widths from its vertex
-    if (e.turn1 === 0 || to <= e.s1) continue;
-    const reach = 2 * half + ROOM;
-    items.push({ body, element: -1, box: [c.x1 - reach, c.y1 - reach, c.x1 + reach, c.y1 + reach] });
+    if (data[k + TURN1] !== 0 && to > s1) items.addSquare(body, c.x1, c.y1, 2 * half + ROOM);
   }
 }
 
-function boxOf(drawing: Drawing, body: Exclude<PlanBody, Strip>): PlanBox {
+function addBody(drawing: Drawing, body: Exclude<PlanBody, Strip>, i: number, items: Items): void {
   if (body.kind === 'chamber') {
-    const { outline } = drawing.chip.chambers[body.chamber]!;
-    const xs = outline.map(([x]) => x);
-    const ys = outline.map(([, y]) => y);
-    return [Math.min(...xs) - ROOM, Math.min(...ys) - ROOM, Math.max(...xs) + ROOM, Math.max(...ys) + ROOM];
+    const at = items.add(i, -1);
+    const b = items.boxes;
+    b[at] = b[at + 1] = Infinity;
+    b[at + 2] = b[at + 3] = -Infinity;
+    for (const [x, y] of drawing.chip.chambers[body.chamber]!.outline) {
+      b[at] = Math.min(b[at]!, x - ROOM);
+      b[at + 1] = Math.min(b[at + 1]!, y - ROOM);
+      b[at + 2] = Math.max(b[at + 2]!, x + ROOM);
+      b[at + 3] = Math.max(b[at + 3]!, y + ROOM);
+    }
+    return;
   }
-  const reach = ROOM + (body.kind === 'disc' ? body.radius : 2 * Math.max(body.into.half, body.out.half));
-  return [body.x - reach, body.y - reach, body.x + reach, body.y + reach];
+  const reach = body.kind === 'disc' ? body.radius : 2 * Math.max(body.into.half, body.out.half);
+  items.addSquare(i, body.x, body.y, ROOM + reach);
 }
 
 /** The loops with the two edges of every cut taken out and what they parted joined; undefined where an edge has no partner. */
 function joined(loops: readonly (readonly Edge[])[]): Edge[][] | undefined {
-  const edges: Edge[] = loops.flat();
+  const edges: Edge[] = [];
+  let tags = 0;
+  for (const loop of loops) {
+    for (const e of loop) {
+      edges.push(e);
+      tags = Math.max(tags, e.tag);
+    }
+  }
   const next = new Int32Array(edges.length);
   const before = new Int32Array(edges.length);
-  const byTag = new Map<number, number[]>();
+  /** Two edges for each cut, -1 where there is none. */
+  const pairs = new Int32Array(2 * (tags + 1)).fill(-1);
+  const order: number[] = [];
   let first = 0;
   for (const loop of loops) {
-    loop.forEach(({ tag }, k) => {
-      const here = first + k;
-      next[here] = first + ((k + 1) % loop.length);
-      before[next[here]!] = here;
-      if (tag > 0) byTag.set(tag, [...(byTag.get(tag) ?? []), here]);
-    });
-    first += loop.length;
+    const n = loop.length;
+    for (let k = 0; k < n; k++) {
+      next[first + k] = first + (k + 1 === n ? 0 : k + 1);
+      before[first + k] = first + (k === 0 ? n - 1 : k - 1);
+      const { tag } = loop[k]!;
+      if (tag <= 0) continue;
+      if (pairs[2 * tag]! < 0) {
+        pairs[2 * tag] = first + k;
+        order.push(tag);
+      } else if (pairs[2 * tag + 1]! < 0) pairs[2 * tag + 1] = first + k;
+      else return undefined;
+    }
+    first += n;
   }
-  const seams = new Set<number>();
+  const seams = new Uint8Array(edges.length);
   const gone = new Uint8Array(edges.length);
-  const link = (from: number, to: number): void => {
-    next[from] = to;
-    before[to] = from;
-    seams.add(to);
-  };
-  for (const pair of byTag.values()) {
-    const [a, b] = pair;
-    if (pair.length !== 2 || a === undefined || b === undefined) return undefined;
+  for (const tag of order) {
+    const a = pairs[2 * tag]!;
+    const b = pairs[2 * tag + 1]!;
+    if (b < 0) return undefined;
     if (apart(edges, a, next[b]!) > SAME || apart(edges, next[a]!, b) > SAME) return undefined;
     gone[a] = 1;
     gone[b] = 1;
-    const [beforeA, beforeB, afterA, afterB] = [before[a]!, before[b]!, next[a]!, next[b]!];
-    link(beforeA, afterB);
-    link(beforeB, afterA);
+    const beforeA = before[a]!;
+    const beforeB = before[b]!;
+    const afterA = next[a]!;
+    const afterB = next[b]!;
+    next[beforeA] = afterB;
+    before[afterB] = beforeA;
+    next[beforeB] = afterA;
+    before[afterA] = beforeB;
+    seams[afterA] = 1;
+    seams[afterB] = 1;
   }
   const out: Edge[][] = [];
   const seen = new Uint8Array(edges.length);
@@ -205,7 +307,7 @@ function joined(loops: readonly (readonly Edge[])[]): Edge[][] | undefined {
       if (gone[k]) return undefined;
       seen[k] = 1;
       // a seam parts one straight side: its edge goes on
-      if (!seams.has(k) || !goesOn(edges, before[k]!, k)) loop.push(edges[k]!);
+      if (!seams[k] || !goesOn(edges, before[k]!, k)) loop.push(edges[k]!);
     }
     if (loop.length < 2) return undefined;
     out.push(fromLeast(loop));
@@ -213,18 +315,20 @@ function joined(loops: readonly (readonly Edge[])[]): Edge[][] | undefined {
   return out;
 }
 
-const apart = (edges: readonly Edge[], a: number, b: number): number =>
-  Math.hypot(edges[a]!.x - edges[b]!.x, edges[a]!.y - edges[b]!.y);
+function apart(edges: readonly Edge[], a: number, b: number): number {
+  return Math.hypot(edges[a]!.x - edges[b]!.x, edges[a]!.y - edges[b]!.y);
+}
 
-const goesOn = (edges: readonly Edge[], a: number, b: number): boolean =>
-  edges[a]!.bulge === 0 && edges[b]!.bulge === 0;
+function goesOn(edges: readonly Edge[], a: number, b: number): boolean {
+  return edges[a]!.bulge === 0 && edges[b]!.bulge === 0;
+}
 
 /** The loop from its leftmost, then lowest corner on, as one union gives it. */
 function fromLeast(loop: Edge[]): Edge[] {
   let k = 0;
-  loop.forEach((e, i) => {
-    const dx = e.x - loop[k]!.x;
-    if (dx < -SAME || (dx <= SAME && e.y < loop[k]!.y)) k = i;
-  });
-  return [...loop.slice(k), ...loop.slice(0, k)];
+  for (let i = 1; i < loop.length; i++) {
+    const dx = loop[i]!.x - loop[k]!.x;
+    if (dx < -SAME || (dx <= SAME && loop[i]!.y < loop[k]!.y)) k = i;
+  }
+  return k === 0 ? loop : [...loop.slice(k), ...loop.slice(0, k)];
 }

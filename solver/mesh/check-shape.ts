@@ -55,9 +55,9 @@ export function twiceArea(loop: readonly Edge[]): number {
   let sum = 0;
   for (let i = 0; i < loop.length; i += 1) {
     const a = loop[i];
-    const b = loop[(i + 1) % loop.length];
+    const b = loop[i + 1 === loop.length ? 0 : i + 1];
     sum += (a.x - ox) * (b.y - oy) - (b.x - ox) * (a.y - oy);
-    sum += twiceSegmentArea(curveOf(a.x, a.y, b.x, b.y, a.bulge));
+    if (a.bulge !== 0) sum += twiceSegmentArea(curveOf(a.x, a.y, b.x, b.y, a.bulge));
   }
   return sum;
 }

@@ -92,7 +92,7 @@ describe('GDSII', () => {
       expect(units[1]! / 1e-9).toBeCloseTo(1, 12);
       const ours = readGdsii(bytes).loops;
       expect([...theirs.keys()].sort()).toEqual([...ours.keys()].sort());
-      for (const [key, loops] of theirs) expect(loops).toEqual(ours.get(key));
+      for (const [key, loops] of theirs) expect(loops).toEqual(ours.get(key)!.edges());
       // what they cover together is the drawing: no piece lost, none twice
       for (const plane of model.planes) {
         if (plane.cavities.length === 0) continue;

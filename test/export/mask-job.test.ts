@@ -63,8 +63,7 @@ describe('masks as a page asks for them', () => {
       const { files, report } = await page.call('mask.take', { job });
       expect(files.map(({ name }) => name)).toEqual(report.files.map(({ name }) => name));
       expect(report.options.mirror).toBe(true);
-      const text = new TextDecoder().decode(files[0]!.bytes!);
-      expect(readDxf(text).loops.get('L1_FLOW')!.length).toBe(6);
+      expect(readDxf(files[0]!.bytes!).loops.get('L1_FLOW')!.length).toBe(6);
       expect((await refused(page.call('mask.take', { job }))).what).toMatch(/no such mask job/);
 
       // written to a place, and never over what is there unless that is asked for

@@ -23,7 +23,7 @@ async function check(model: MaskModel, says: string): Promise<number> {
         for (const part of PARTS) {
           const shapes = plane[part];
           if (shapes.length === 0) continue;
-          const loops = found.loops.get(name(plane, part)) ?? [];
+          const loops = found.loops.get(name(plane, part))?.edges() ?? [];
           // to be compared at all, true arcs are cut within a quarter of the chord error
           const difference = apart(shapes, loops, chordError / 4);
           const allowed = chordError * perimeterOf(shapes);

@@ -1,4 +1,5 @@
 import { area, FillRule, type Path64, type Paths64, union, xor } from 'clipper2-ts';
+import { type Loops, pathsOf } from './loops.ts';
 import { tiles } from './split.ts';
 
 /** Points that are compared at once. */
@@ -13,12 +14,13 @@ const UNLIKE = 0.25;
  * those that two polygons of one set have in opposite directions, cancel out; what is left are the closed outlines
  * of the difference. Where most of many edges are unlike, what is covered twice counts once.
  */
-export function differenceOf(a: Paths64, b: Paths64): number {
-  const edges = new Edges(pointsOf(a));
-  for (const path of a) edges.add(path, 1);
-  for (const path of b) edges.add(path, -1);
+export function differenceOf(a: Loops, b: Loops): number {
+  const edges = new Edges(a.points);
+  edges.add(a, 1);
+  edges.add(b, -1);
   const left = edges.left();
-  if (left.length > MANY && left.length > UNLIKE * edges.count) return tiled(a, b);
+  if (left.length > MANY && left.length > UNLIKE * (a.points + b.points))
+    return tiled(pathsOf(a), pathsOf(b));
   return areaOf(union(loopsOf(left), FillRule.NonZero));
 }
 
@@ -28,14 +30,12 @@ function tiled(a: Paths64, b: Paths64): number {
   return sum;
 }
 
-const pointsOf = (paths: Paths64): number => paths.reduce((sum, path) => sum + path.length, 0);
 const areaOf = (paths: Paths64): number => paths.reduce((sum, path) => sum + area(path), 0);
 
 type DirectedEdge = readonly [x0: number, y0: number, x1: number, y1: number];
 
 /** Directed edges with how often they are there; those along the axes point by point, the others as wholes. */
 class Edges {
-  count = 0;
   /** By the coordinate of the line, in turns: a place along it, and by how much its edges become more there. */
   readonly #upright = new Map<number, number[]>();
   readonly #level = new Map<number, number[]>();
@@ -52,14 +52,21 @@ class Edges {
     this.#slanted = new Float64Array((5 * size) / 2 + 5);
   }
 
-  add(path: Path64, times: number): void {
-    this.count += path.length;
-    let from = path[path.length - 1]!;
-    for (const to of path) {
-      if (from.x === to.x) put(this.#upright, from.x, from.y, to.y, times);
-      else if (from.y === to.y) put(this.#level, from.y, from.x, to.x, times);
-      else this.#whole(from.x, from.y, to.x, to.y, times);
-      from = to;
+  add({ x, y, ends }: Loops, times: number): void {
+    let from = 0;
+    for (const end of ends) {
+      let x0 = x[end - 1]!;
+      let y0 = y[end - 1]!;
+      for (let k = from; k < end; k++) {
+        const x1 = x[k]!;
+        const y1 = y[k]!;
+        if (x0 === x1) put(this.#upright, x0, y0, y1, times);
+        else if (y0 === y1) put(this.#level, y0, x0, x1, times);
+        else this.#whole(x0, y0, x1, y1, times);
+        x0 = x1;
+        y0 = y1;
+      }
+      from = end;
     }
   }
 
@@ -71,7 +78,13 @@ class Edges {
       this.#slanted[5 * known - 1]! += times;
       return;
     }
-    this.#slanted.set([x0, y0, x1, y1, times], 5 * this.#wholes);
+    const at = 5 * this.#wholes;
+    const s = this.#slanted;
+    s[at] = x0;
+    s[at + 1] = y0;
+    s[at + 2] = x1;
+    s[at + 3] = y1;
+    s[at + 4] = times;
     this.#wholes += 1;
     this.#table[place] = this.#wholes;
   }

@@ -1,10 +1,33 @@
+import { inUnit, metres } from '../../../solver/chip/units.ts';
+import { TextBytes } from './bytes.ts';
+
+const inUm = (nm: number): number => inUnit(metres(nm), 'um');
+const same = (value: number): number => value;
+
 /** A DXF file as group codes and values, one per line. */
 export class DxfText {
-  readonly #lines: string[] = [];
+  readonly #out = new TextBytes();
   #handle = 0x100;
 
   put(...pairs: readonly (string | number)[]): void {
-    for (let i = 0; i < pairs.length; i += 2) this.#lines.push(String(pairs[i]), String(pairs[i + 1]));
+    for (let i = 0; i < pairs.length; i++) {
+      this.#out.ascii(String(pairs[i]));
+      this.#out.ascii(END);
+    }
+  }
+
+  /** A corner of a polyline, nm, as micrometres to a picometre; with the bulge of its edge where that is bent. */
+  corner(x: number, y: number, bulge: number): void {
+    const out = this.#out;
+    out.ascii(X);
+    out.fixed(x, -3, 6, inUm);
+    out.ascii(Y);
+    out.fixed(y, -3, 6, inUm);
+    out.ascii(END);
+    if (bulge === 0) return;
+    out.ascii(BULGE);
+    out.fixed(bulge, 0, 12, same);
+    out.ascii(END);
   }
 
   /** The next free handle, hexadecimal. */
@@ -17,10 +40,19 @@ export class DxfText {
     return (this.#handle + 1).toString(16).toUpperCase();
   }
 
+  append(other: DxfText): void {
+    this.#out.append(other.#out);
+  }
+
   text(): string {
-    return `${this.#lines.join('\r\n')}\r\n`;
+    return this.#out.toString();
   }
 }
+
+const END = '\r\n';
+const X = `10${END}`;
+const Y = `${END}20${END}`;
+const BULGE = `42${END}`;
 
 /** Fixed handles of what every file has. */
 export const MODEL = '17';

@@ -89,7 +89,8 @@ export function writeDxf(model: MaskModel): string {
   dxf.put(9, '$EXTMAX', 10, um(extent.x1), 20, um(extent.y1), 30, 0, 0, 'ENDSEC');
   dxf.put(0, 'SECTION', 2, 'CLASSES', 0, 'ENDSEC');
   body.put(0, 'EOF');
-  return dxf.text() + body.text();
+  dxf.append(body);
+  return dxf.text();
 }
 
 function putChip(dxf: DxfText, model: MaskModel, owner: string, height: number): void {
@@ -115,16 +116,13 @@ function putShape(dxf: DxfText, owner: string, layer: string, shape: Shape): voi
     }
     entity(dxf, 'LWPOLYLINE', owner, layer, 'AcDbPolyline');
     dxf.put(90, loop.length, 70, 1);
-    for (const { x, y, bulge } of loop) {
-      dxf.put(10, um(x), 20, um(y));
-      if (bulge !== 0) dxf.put(42, Number(bulge.toFixed(12)));
-    }
+    for (const { x, y, bulge } of loop) dxf.corner(x, y, bulge);
   }
 }
 
 /** A whole circle that is no hole. */
 const isCircle = (loop: readonly Edge[]): boolean =>
-  loop.length === 2 && loop.every(({ bulge }) => Math.abs(bulge - 1) < 1e-12);
+  loop.length === 2 && Math.abs(loop[0]!.bulge - 1) < 1e-12 && Math.abs(loop[1]!.bulge - 1) < 1e-12;
 
 function putCircle(dxf: DxfText, owner: string, layer: string, x: number, y: number, radius: number): void {
   entity(dxf, 'CIRCLE', owner, layer, 'AcDbCircle');

@@ -41,7 +41,7 @@ export const FORMATS: Readonly<Record<MaskFormat, Format>> = {
     arcs: WHOLE,
     layer: dxfLayer,
     write: (model) => bytesOf(writeDxf(model)),
-    read: (bytes) => readDxf(textOf(bytes)),
+    read: readDxf,
   },
   gdsii: {
     extension: 'gds',

@@ -79,18 +79,18 @@ class Stream {
 
   short(record: number, ...values: readonly number[]): void {
     const at = this.#head(record, 2 * values.length);
-    values.forEach((value, i) => {
-      this.#view.setInt16(at + 2 * i, value);
-    });
+    for (let i = 0; i < values.length; i++) this.#view.setInt16(at + 2 * i, values[i]!);
   }
 
   points(points: readonly { readonly x: number; readonly y: number }[], closed: boolean): void {
-    const all = closed ? [...points, points[0]!] : points;
-    const at = this.#head(RECORD.XY, 8 * all.length);
-    all.forEach(({ x, y }, i) => {
-      this.#view.setInt32(at + 8 * i, Math.round(x));
-      this.#view.setInt32(at + 8 * i + 4, Math.round(y));
-    });
+    const count = points.length + (closed ? 1 : 0);
+    const at = this.#head(RECORD.XY, 8 * count);
+    const view = this.#view;
+    for (let i = 0; i < count; i++) {
+      const { x, y } = points[i === points.length ? 0 : i]!;
+      view.setInt32(at + 8 * i, Math.round(x));
+      view.setInt32(at + 8 * i + 4, Math.round(y));
+    }
   }
 
   inverses(record: number, ...values: readonly number[]): void {
@@ -177,11 +177,12 @@ export function writeGdsii(model: MaskModel): Uint8Array {
 
 function putPlane(stream: Stream, plane: MaskPlane, chordError: number, labels: boolean): void {
   for (const part of PARTS) {
+    const datatype = PARTS.indexOf(part);
     for (const shape of plane[part]) {
       for (const polygon of split(flatPaths(shape, chordError), MOST_POINTS - 1)) {
         stream.none(RECORD.BOUNDARY);
         stream.short(RECORD.LAYER, plane.number);
-        stream.short(RECORD.DATATYPE, PARTS.indexOf(part));
+        stream.short(RECORD.DATATYPE, datatype);
         stream.points(polygon, true);
         stream.none(RECORD.ENDEL);
       }

@@ -6,6 +6,7 @@ import { PARTS, shifts } from './cells.ts';
 import { compare } from './compare.ts';
 import { openingFindings } from './findings.ts';
 import { FORMATS } from './formats.ts';
+import { Loops } from './loops.ts';
 import { type MaskModel, type MaskPlane, maskModel } from './model.ts';
 import { fileName } from './names.ts';
 import { unreadable } from './read.ts';
@@ -84,7 +85,7 @@ function checked(
   return planes.flatMap((plane) =>
     PARTS.flatMap((part) => {
       const shapes = plane[part];
-      const loops = found.loops.get(FORMATS[format].layer(plane, part)) ?? [];
+      const loops = found.loops.get(FORMATS[format].layer(plane, part)) ?? new Loops();
       if (shapes.length === 0) return [];
       const { difference, allowed } = compare(shapes, loops, settings.chordError, arcs, found.offArc);
       if (!(difference <= allowed)) {

@@ -1,11 +1,11 @@
 import PDFDocument from 'pdfkit';
 import { curve } from '../../../solver/chip/geometry/curve.ts';
-import { inUnit, metres } from '../../../solver/chip/units.ts';
-import type { Edge, Shape } from '../../../solver/mesh/mesh.ts';
 import { Fonts } from '../note/pdf-fonts.ts';
+import { TextBytes } from './bytes.ts';
 import { PARTS, shifts } from './cells.ts';
-import { cutArcs } from './compare.ts';
 import { dxfLayer } from './dxf.ts';
+import { cutLoops, type Loops } from './loops.ts';
+import { mm, putMm } from './millimetres.ts';
 import type { MaskModel, MaskPlane } from './model.ts';
 import { type Page, PDF_ARC, POINTS_PER_MM, pageOf } from './page.ts';
 
@@ -17,12 +17,6 @@ import { type Page, PDF_ARC, POINTS_PER_MM, pageOf } from './page.ts';
 
 /** Where there is no lane the outline is a line this wide, mm. */
 const HAIRLINE = 0.02;
-
-/** Millimetres to a tenth of a nanometre. */
-function mm(nm: number): number {
-  const rounded = Number(inUnit(metres(nm), 'mm').toFixed(7));
-  return rounded === 0 ? 0 : rounded;
-}
 
 const WHITE = '1 g 1 G';
 const BLACK = '0 g 0 G';
@@ -69,7 +63,7 @@ function addPage(doc: Doc, fonts: Fonts, model: MaskModel, plane: MaskPlane): vo
     BBox: [-10_000, -10_000, 10_000, 10_000],
     Resources: {},
   });
-  form.end(chipContent(model, plane) as unknown as Buffer);
+  form.end(Buffer.from(chipContent(model, plane)));
   const resources = doc.page as unknown as { xobjects: Record<string, unknown> };
   resources.xobjects.Chip = form;
   const raw = (text: string): void => {
@@ -105,44 +99,57 @@ function putNotes(doc: Doc, fonts: Fonts, model: MaskModel, plane: MaskPlane, pa
   }
 }
 
-function chipContent(model: MaskModel, plane: MaskPlane): string {
-  const out: string[] = [];
+function chipContent(model: MaskModel, plane: MaskPlane): Uint8Array {
+  const out = new TextBytes();
   for (const part of PARTS) {
     if (plane[part].length === 0) continue;
-    out.push(`/${dxfLayer(plane, part)} BMC`);
-    for (const shape of plane[part]) putPath(out, shape);
-    if (part !== 'outline') out.push('f*');
+    out.ascii(`/${dxfLayer(plane, part)} BMC\n`);
+    putLoops(out, cutLoops(plane[part], PDF_ARC));
+    if (part !== 'outline') out.ascii('f*\n');
     // the lane's inner side is the outline already
-    else out.push(model.settings.lane > 0 ? 'n' : `${HAIRLINE} w S`);
-    out.push('EMC');
+    else out.ascii(model.settings.lane > 0 ? 'n\n' : `${HAIRLINE} w S\n`);
+    out.ascii('EMC\n');
   }
-  return `${out.join('\n')}\n`;
+  return out.bytes();
 }
 
-function putPath(out: string[], shape: Shape): void {
-  for (const whole of shape) {
-    const loop = cutArcs(whole, PDF_ARC);
-    out.push(`${mm(loop[0]!.x)} ${mm(loop[0]!.y)} m`);
-    for (let k = 0; k < loop.length; k++) {
-      const last = k + 1 === loop.length;
-      const e = loop[k]!;
-      const next = loop[last ? 0 : k + 1]!;
-      if (e.bulge !== 0) out.push(cubic(e, next));
-      else if (!last) out.push(`${mm(next.x)} ${mm(next.y)} l`);
+function putLoops(out: TextBytes, loops: Loops): void {
+  const { x, y, bulge } = loops;
+  let from = 0;
+  for (const end of loops.ends) {
+    putPoint(out, x[from]!, y[from]!);
+    out.ascii('m\n');
+    for (let k = from; k < end; k++) {
+      const last = k + 1 === end;
+      const next = last ? from : k + 1;
+      if (bulge[k] !== 0) putCubic(out, x[k]!, y[k]!, x[next]!, y[next]!, bulge[k]!);
+      else if (!last) {
+        putPoint(out, x[next]!, y[next]!);
+        out.ascii('l\n');
+      }
     }
-    out.push('h');
+    out.ascii('h\n');
+    from = end;
   }
 }
 
 /** The cubic with the arc's tangents at its ends and the arc's own point in its middle. */
-function cubic(e: Edge, next: Edge): string {
-  const c = curve(e.x, e.y, next.x, next.y, e.bulge);
-  const sweep = 4 * Math.atan(e.bulge);
+function putCubic(out: TextBytes, x0: number, y0: number, x1: number, y1: number, bulge: number): void {
+  const c = curve(x0, y0, x1, y1, bulge);
+  const sweep = 4 * Math.atan(bulge);
   const reach = (4 / 3) * Math.tan(sweep / 4) * (1 / c.curvature);
   const cos = Math.cos(sweep);
   const sin = Math.sin(sweep);
-  const [vx, vy] = [c.ux * cos - c.uy * sin, c.uy * cos + c.ux * sin];
-  const first = `${mm(e.x + reach * c.ux)} ${mm(e.y + reach * c.uy)}`;
-  const second = `${mm(next.x - reach * vx)} ${mm(next.y - reach * vy)}`;
-  return `${first} ${second} ${mm(next.x)} ${mm(next.y)} c`;
+  putPoint(out, x0 + reach * c.ux, y0 + reach * c.uy);
+  putPoint(out, x1 - reach * (c.ux * cos - c.uy * sin), y1 - reach * (c.uy * cos + c.ux * sin));
+  putPoint(out, x1, y1);
+  out.ascii('c\n');
+}
+
+/** Each number with a space after it. */
+function putPoint(out: TextBytes, x: number, y: number): void {
+  putMm(out, x);
+  out.ascii(' ');
+  putMm(out, y);
+  out.ascii(' ');
 }

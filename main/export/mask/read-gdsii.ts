@@ -1,6 +1,6 @@
 import { NM_PER_M } from '../../../solver/chip/units.ts';
-import type { Edge } from '../../../solver/mesh/mesh.ts';
 import { CHIP, RECORD } from './gdsii.ts';
+import type { Loops } from './loops.ts';
 import { LoopsByLayer, type ReadMask, unreadable } from './read.ts';
 
 /** Reads a GDSII stream as `writeGdsii` writes it: boundaries of the chip's structure, and where it is set. */
@@ -15,7 +15,9 @@ export function readGdsii(bytes: Uint8Array): ReadMask {
   let datatype = 0;
   let columns = 1;
   let rows = 1;
-  let points: [number, number][] = [];
+  /** Where the element's points begin and end. */
+  let points = 0;
+  let pointsEnd = 0;
   let ended = false;
   for (let at = 0; at + 4 <= bytes.length && !ended; ) {
     const size = view.getUint16(at);
@@ -50,16 +52,16 @@ export function readGdsii(bytes: Uint8Array): ReadMask {
         rows = view.getInt16(body + 2);
         break;
       case RECORD.XY:
-        points = [];
-        for (let k = body; k < at + size; k += 8) points.push([view.getInt32(k), view.getInt32(k + 4)]);
+        points = body;
+        pointsEnd = at + size;
         break;
       case RECORD.ENDEL:
         if (element === RECORD.BOUNDARY && structure === CHIP)
-          loops.add(`${layer}/${datatype}`, boundary(points));
+          addBoundary(loops.of(`${layer}/${datatype}`), view, points, pointsEnd);
         else if (element === RECORD.SREF || element === RECORD.AREF) {
-          const [x, y] = points[0]!;
-          const dx = element === RECORD.AREF ? (points[1]![0] - x) / columns : 0;
-          const dy = element === RECORD.AREF ? (points[2]![1] - y) / rows : 0;
+          const [x, y] = [view.getInt32(points), view.getInt32(points + 4)];
+          const dx = element === RECORD.AREF ? (view.getInt32(points + 8) - x) / columns : 0;
+          const dy = element === RECORD.AREF ? (view.getInt32(points + 20) - y) / rows : 0;
           for (let j = 0; j < rows; j++)
             for (let i = 0; i < columns; i++) shifts.push([x + i * dx, y + j * dy]);
         }
@@ -76,12 +78,17 @@ export function readGdsii(bytes: Uint8Array): ReadMask {
   return { loops: loops.map, shifts: shifts.length > 0 ? shifts : [[0, 0]], offArc: 0 };
 }
 
-function boundary(points: readonly (readonly [number, number])[]): Edge[] {
-  const [first, last] = [points[0]!, points[points.length - 1]!];
-  if (points.length < 4 || first[0] !== last[0] || first[1] !== last[1])
-    throw unreadable('a boundary is open');
-  return points.slice(0, -1).map(([x, y]) => ({ x, y, bulge: 0, tag: 0 }));
+function addBoundary(loops: Loops, view: DataView, from: number, end: number): void {
+  const last = end - POINT;
+  if (end - from < 4 * POINT || view.getInt32(last) !== view.getInt32(from)) throw unreadable(OPEN);
+  if (view.getInt32(last + 4) !== view.getInt32(from + 4)) throw unreadable(OPEN);
+  for (let k = from; k < last; k += POINT) loops.add(view.getInt32(k), view.getInt32(k + 4), 0);
+  loops.close();
 }
+
+/** Bytes of a point. */
+const POINT = 8;
+const OPEN = 'a boundary is open';
 
 function textOf(bytes: Uint8Array, at: number, size: number): string {
   let text = '';

@@ -1,5 +1,7 @@
 import { inflateSync } from 'node:zlib';
 import { NM_PER_M, unitSize } from '../../../solver/chip/units.ts';
+import { numberIn } from './bytes.ts';
+import type { Loops } from './loops.ts';
 import { POINTS_PER_MM } from './page.ts';
 import { LoopsByLayer, type ReadMask, unreadable } from './read.ts';
 
@@ -11,9 +13,9 @@ export function readPdf(bytes: Uint8Array): ReadMask {
   let shifts: [number, number][] | undefined;
   let off = 0;
   for (const { dictionary, body } of streams(bytes)) {
-    if (/\/Subtype \/Form/.test(dictionary)) off = Math.max(off, readForm(textOf(dictionary, body), loops));
+    if (/\/Subtype \/Form/.test(dictionary)) off = Math.max(off, readForm(plain(dictionary, body), loops));
     else if (!/\/(Length1|Subtype|Type)\b/.test(dictionary)) {
-      const text = textOf(dictionary, body);
+      const text = plain(dictionary, body).toString('latin1');
       if (!text.includes('/Chip Do')) continue;
       const placed = readPlaces(text);
       if (shifts && JSON.stringify(shifts) !== JSON.stringify(placed)) throw unreadable('its pages differ');
@@ -39,48 +41,64 @@ function* streams(bytes: Uint8Array): Generator<{ dictionary: string; body: Uint
   }
 }
 
-function textOf(dictionary: string, body: Uint8Array): string {
-  const plain = dictionary.includes('/FlateDecode') ? inflateSync(body) : Buffer.from(body);
-  return plain.toString('latin1');
+function plain(dictionary: string, body: Uint8Array): Buffer {
+  return dictionary.includes('/FlateDecode') ? inflateSync(body) : Buffer.from(body);
 }
 
-/** Loops by their marks; returns how far the curves lie off the arcs they stand for, nm. */
-function readForm(text: string, loops: LoopsByLayer): number {
+const SPACE = 0x20;
+const LINE_FEED = 0x0a;
+const SLASH = 0x2f;
+/** Operators of one letter; the others are not of paths, but for the marks. */
+const MOVE = 0x6d;
+const LINE = 0x6c;
+const CURVE = 0x63;
+const CLOSE = 0x68;
+
+/** Loops by their marks, line by line: numbers, then an operator; returns how far curves lie off their arcs, nm. */
+function readForm(bytes: Buffer, layers: LoopsByLayer): number {
   let off = 0;
-  let layer = '';
+  let loops: Loops | undefined;
   let x = 0;
   let y = 0;
-  let loop: { x: number; y: number; bulge: number; tag: number }[] = [];
-  for (const line of text.split('\n')) {
-    const words = line.split(' ');
-    const operator = words.pop();
-    const at = (i: number): number => Number(words[i]) * NM;
+  const numbers = new Float64Array(8);
+  for (let at = 0; at < bytes.length; ) {
+    const start = at;
+    let count = 0;
+    let word = at;
+    for (; at < bytes.length && bytes[at] !== LINE_FEED; at++) {
+      if (bytes[at] !== SPACE) continue;
+      if (count < numbers.length && bytes[start] !== SLASH) numbers[count++] = numberIn(bytes, word, at) * NM;
+      word = at + 1;
+    }
+    const end = at;
+    at += 1;
+    if (bytes[start] === SLASH)
+      loops = layers.of(bytes.toString('latin1', start + 1, bytes.indexOf(SPACE, start)));
+    if (end - word !== 1 || !loops) continue;
+    const operator = bytes[word];
+    if (count !== (operator === CURVE ? 6 : operator === MOVE || operator === LINE ? 2 : count))
+      throw unreadable('a path has too few numbers');
     switch (operator) {
-      case 'BMC':
-        layer = words[0]!.slice(1);
+      case MOVE:
+      case LINE:
+        x = numbers[0]!;
+        y = numbers[1]!;
+        loops.add(x, y, 0);
         break;
-      case 'm':
-        [x, y] = [at(0), at(1)];
-        loop = [{ x, y, bulge: 0, tag: 0 }];
-        break;
-      case 'l':
-        [x, y] = [at(0), at(1)];
-        loop.push({ x, y, bulge: 0, tag: 0 });
-        break;
-      case 'c': {
-        const { bulge, apart } = arcUnder(x, y, at(0), at(1), at(2), at(3), at(4), at(5));
-        off = Math.max(off, apart);
-        loop[loop.length - 1]!.bulge = bulge;
-        [x, y] = [at(4), at(5)];
-        loop.push({ x, y, bulge: 0, tag: 0 });
+      case CURVE: {
+        const n = numbers;
+        const arc = arcUnder(x, y, n[0]!, n[1]!, n[2]!, n[3]!, n[4]!, n[5]!);
+        off = Math.max(off, arc.apart);
+        loops.bend(arc.bulge);
+        x = n[4]!;
+        y = n[5]!;
+        loops.add(x, y, 0);
         break;
       }
-      case 'h': {
-        const [first, last] = [loop[0]!, loop[loop.length - 1]!];
-        if (loop.length > 1 && first.x === last.x && first.y === last.y) loop.pop();
-        loops.add(layer, loop);
+      case CLOSE:
+        loops.dropReturn();
+        loops.close();
         break;
-      }
     }
   }
   return off;
@@ -97,13 +115,9 @@ function arcUnder(
   x1: number,
   y1: number,
 ): { bulge: number; apart: number } {
-  const chord = Math.hypot(x1 - x0, y1 - y0);
-  const point = (t: number): [number, number] => {
-    const s = 1 - t;
-    const [p, q, r, w] = [s * s * s, 3 * s * s * t, 3 * s * t * t, t * t * t];
-    return [p * x0 + q * ax + r * bx + w * x1, p * y0 + q * ay + r * by + w * y1];
-  };
-  const [mx, my] = point(0.5);
+  const chord = length(x1 - x0, y1 - y0);
+  const mx = cubicAt(0.5, x0, ax, bx, x1);
+  const my = cubicAt(0.5, y0, ay, by, y1);
   // to the right of the chord is the outer side of a counter-clockwise arc
   const sagitta = ((mx - x0) * (y1 - y0) - (my - y0) * (x1 - x0)) / chord;
   const bulge = (2 * sagitta) / chord;
@@ -115,10 +129,18 @@ function arcUnder(
   const cy = (y0 + y1) / 2 + ((x1 - x0) / chord) * reach;
   let apart = 0;
   for (let i = 1; i < 8; i++) {
-    const [px, py] = point(i / 8);
-    apart = Math.max(apart, Math.abs(Math.hypot(px - cx, py - cy) - Math.abs(radius)));
+    const px = cubicAt(i / 8, x0, ax, bx, x1);
+    const py = cubicAt(i / 8, y0, ay, by, y1);
+    apart = Math.max(apart, Math.abs(length(px - cx, py - cy) - Math.abs(radius)));
   }
   return { bulge, apart };
+}
+
+const length = (x: number, y: number): number => Math.sqrt(x * x + y * y);
+
+function cubicAt(t: number, from: number, a: number, b: number, to: number): number {
+  const s = 1 - t;
+  return s * s * s * from + 3 * s * s * t * a + 3 * s * t * t * b + t * t * t * to;
 }
 
 function readPlaces(text: string): [number, number][] {

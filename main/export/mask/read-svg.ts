@@ -1,6 +1,7 @@
 import { SaxesParser } from 'saxes';
 import { NM_PER_M, unitSize } from '../../../solver/chip/units.ts';
-import type { Edge } from '../../../solver/mesh/mesh.ts';
+import { numberIn } from './bytes.ts';
+import type { Loops } from './loops.ts';
 import { LoopsByLayer, type ReadMask, unreadable } from './read.ts';
 
 const NM = unitSize('mm') * NM_PER_M;
@@ -20,7 +21,7 @@ export function readSvg(text: string): ReadMask {
       const [, , width, height] = get('viewBox').split(' ').map(Number);
       scaled = get('width') === `${width}mm` && get('height') === `${height}mm`;
     } else if (tag.name === 'path') {
-      for (const loop of get('d').split(/(?<=Z)/)) loops.add(get('id'), loopOf(loop));
+      addPath(loops.of(get('id')), Buffer.from(get('d'), 'latin1'));
     } else if (tag.name === 'use') shifts.push([Number(get('x')) * NM, 0 - Number(get('y')) * NM]);
   });
   parser.write(text).close();
@@ -28,30 +29,49 @@ export function readSvg(text: string): ReadMask {
   return { loops: loops.map, shifts: shifts.length > 0 ? shifts : [[0, 0]], offArc: 0 };
 }
 
-const STEP = /([MLAZ])([^MLAZ]*)/g;
+const MOVE = 0x4d;
+const LINE = 0x4c;
+const ARC = 0x41;
+const CLOSE = 0x5a;
+const SPACE = 0x20;
 
-function loopOf(d: string): Edge[] {
-  const loop: { x: number; y: number; bulge: number; tag: number }[] = [];
-  let closed = false;
-  for (const [, kind, numbers] of d.matchAll(STEP)) {
-    if (kind === 'Z') {
-      closed = true;
-      break;
+/** Letters with the numbers that follow them, one space between two. */
+function addPath(loops: Loops, path: Uint8Array): void {
+  const numbers = new Float64Array(7);
+  for (let at = 0; at < path.length; ) {
+    const step = path[at]!;
+    at += 1;
+    let count = 0;
+    for (let word = at; at < path.length && path[at - 1] !== CLOSE; at++) {
+      const letter = path[at]! >= ARC;
+      if (!letter && path[at] !== SPACE) continue;
+      if (count < numbers.length) numbers[count++] = numberIn(path, word, at);
+      word = at + 1;
+      if (letter) break;
     }
-    const values = numbers!.trim().split(/[ ,]+/).map(Number);
-    const x = values[values.length - 2]! * NM;
-    const y = 0 - values[values.length - 1]! * NM;
-    if (kind === 'A') {
-      const from = loop[loop.length - 1]!;
-      const half = Math.hypot(x - from.x, y - from.y) / 2;
-      const sweep = 2 * Math.asin(Math.min(1, half / (values[0]! * NM)));
-      from.bulge = Math.tan(sweep / 4) * (values[4] === 1 ? -1 : 1);
-    }
-    loop.push({ x, y, bulge: 0, tag: 0 });
+    if (count !== (step === ARC ? 7 : step === CLOSE ? 0 : 2)) throw unreadable('a path is not as written');
+    if (step === CLOSE) {
+      if (loops.points < loops.from(loops.length) + 2) throw unreadable(OPEN);
+      // an arc that closes the loop ends on its first point
+      loops.dropReturn();
+      loops.close();
+    } else if (step === ARC) addArc(loops, numbers);
+    else if (step === LINE || (step === MOVE && loops.points === loops.from(loops.length)))
+      loops.add(numbers[0]! * NM, 0 - numbers[1]! * NM, 0);
+    else throw unreadable(OPEN);
   }
-  if (!closed || loop.length < 2) throw unreadable('an outline is open');
-  // an arc that closes the loop ends on its first point
-  const [first, last] = [loop[0]!, loop[loop.length - 1]!];
-  if (first.x === last.x && first.y === last.y) loop.pop();
-  return loop;
+  if (loops.points > loops.from(loops.length)) throw unreadable(OPEN);
+}
+
+const OPEN = 'an outline is open';
+
+function addArc(loops: Loops, numbers: Float64Array): void {
+  const x = numbers[5]! * NM;
+  const y = 0 - numbers[6]! * NM;
+  const from = loops.points - 1;
+  const [dx, dy] = [x - loops.x[from]!, y - loops.y[from]!];
+  const half = Math.sqrt(dx * dx + dy * dy) / 2;
+  const sweep = 2 * Math.asin(Math.min(1, half / (numbers[0]! * NM)));
+  loops.bend(Math.tan(sweep / 4) * (numbers[4] === 1 ? -1 : 1));
+  loops.add(x, y, 0);
 }

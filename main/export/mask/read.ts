@@ -1,10 +1,10 @@
-import type { Edge } from '../../../solver/mesh/mesh.ts';
 import { Problem } from '../../../solver/problem/problem.ts';
+import { Loops } from './loops.ts';
 
 /** What a reader found in a mask file: loops by the name of the layer they lie on, and where copies of the chip are. */
 export interface ReadMask {
   /** Loops in nm as the chip is drawn, by layer; polygons where the format has no arcs. */
-  readonly loops: ReadonlyMap<string, readonly (readonly Edge[])[]>;
+  readonly loops: ReadonlyMap<string, Loops>;
   /** By how much each copy of the chip is moved, nm. */
   readonly shifts: readonly (readonly [number, number])[];
   /** Furthest that curves in the file lie off the arcs given here, nm. */
@@ -13,12 +13,15 @@ export interface ReadMask {
 
 /** Loops by layer, as they are found. */
 export class LoopsByLayer {
-  readonly map = new Map<string, Edge[][]>();
+  readonly map = new Map<string, Loops>();
 
-  add(layer: string, loop: Edge[]): void {
-    const list = this.map.get(layer);
-    if (list) list.push(loop);
-    else this.map.set(layer, [loop]);
+  of(layer: string): Loops {
+    let loops = this.map.get(layer);
+    if (!loops) {
+      loops = new Loops();
+      this.map.set(layer, loops);
+    }
+    return loops;
   }
 }
 

@@ -1,8 +1,8 @@
-import type { Path64 } from 'clipper2-ts';
-import { curve } from '../../../solver/chip/geometry/curve.ts';
-import { flatten } from '../../../solver/chip/plan.ts';
+import type { Paths64 } from 'clipper2-ts';
+import { curve, lengthOf } from '../../../solver/chip/geometry/curve.ts';
 import { twiceArea } from '../../../solver/mesh/check-shape.ts';
 import type { Edge, Shape } from '../../../solver/mesh/mesh.ts';
+import { pathsOf, polygonsOf } from './loops.ts';
 
 /** What a mask needs of shapes made of lines and true arcs; lengths in nm. */
 
@@ -20,19 +20,31 @@ export interface Placing {
   readonly about: readonly [number, number];
 }
 
-export function placed(shape: Shape, { mirror, scale, about: [cx, cy] }: Placing): Shape {
-  const to = (e: Edge, bulge: number): Edge => ({
+export function placed(shape: Shape, placing: Placing): Shape {
+  const out: Edge[][] = [];
+  for (const loop of shape) {
+    const n = loop.length;
+    const to = new Array<Edge>(n);
+    for (let k = 0; k < n; k++) {
+      // the other way round where mirrored, so that an outer boundary stays counter-clockwise; an edge's bulge goes
+      // to its other end
+      const from = placing.mirror ? loop[k === 0 ? 0 : n - k]! : loop[k]!;
+      to[k] = placedEdge(from, placing.mirror ? loop[n - k - 1]!.bulge : from.bulge, placing);
+    }
+    out.push(to);
+  }
+  return out;
+}
+
+function placedEdge(e: Edge, bulge: number, { mirror, scale, about }: Placing): Edge {
+  const cx = about[0];
+  const cy = about[1];
+  return {
     x: cx + (mirror ? cx - e.x : e.x - cx) * scale,
     y: cy + (e.y - cy) * scale,
     bulge,
     tag: 0,
-  });
-  return shape.map((loop) => {
-    if (!mirror) return loop.map((e) => to(e, e.bulge));
-    // the other way round, so that an outer boundary stays counter-clockwise; an edge's bulge goes to its other end
-    const n = loop.length;
-    return loop.map((_, k) => to(loop[(n - k) % n]!, loop[(2 * n - k - 1) % n]!.bulge));
-  });
+  };
 }
 
 export function moved(shape: Shape, dx: number, dy: number): Shape {
@@ -77,47 +89,50 @@ export function areaOf(shapes: readonly Shape[]): number {
 
 export function perimeterOf(shapes: readonly Shape[]): number {
   let sum = 0;
-  for (const shape of shapes) {
-    for (const loop of shape) {
-      for (let k = 0; k < loop.length; k++) {
-        const e = loop[k]!;
-        const next = loop[k + 1 === loop.length ? 0 : k + 1]!;
-        sum += curve(e.x, e.y, next.x, next.y, e.bulge).length;
-      }
-    }
+  for (const shape of shapes) for (const loop of shape) sum += lengthOfLoop(loop);
+  return sum;
+}
+
+function lengthOfLoop(loop: readonly Edge[]): number {
+  let sum = 0;
+  for (let k = 0; k < loop.length; k++) {
+    const e = loop[k]!;
+    const next = loop[k + 1 === loop.length ? 0 : k + 1]!;
+    sum += lengthOf(e.x, e.y, next.x, next.y, e.bulge);
   }
   return sum;
 }
 
 /** The box round shapes, arcs by their full extent; undefined where there are none. */
 export function boxOf(shapes: Iterable<Shape>): Box | undefined {
-  let [x0, y0, x1, y1] = [Infinity, Infinity, -Infinity, -Infinity];
-  const take = (x: number, y: number) => {
-    x0 = Math.min(x0, x);
-    y0 = Math.min(y0, y);
-    x1 = Math.max(x1, x);
-    y1 = Math.max(y1, y);
-  };
+  const box = { x0: Infinity, y0: Infinity, x1: -Infinity, y1: -Infinity };
   for (const shape of shapes) {
     const outer = shape[0] ?? [];
-    outer.forEach((e, k) => {
-      take(e.x, e.y);
-      if (e.bulge === 0) return;
-      const next = outer[(k + 1) % outer.length]!;
-      const c = curve(e.x, e.y, next.x, next.y, e.bulge);
-      const r = Math.abs(1 / c.curvature);
-      for (const [ux, uy] of [
-        [1, 0],
-        [0, 1],
-        [-1, 0],
-        [0, -1],
-      ] as const) {
-        if (onArc(c.x0 - c.cx, c.y0 - c.cy, 4 * Math.atan(e.bulge), ux, uy))
-          take(c.cx + r * ux, c.cy + r * uy);
-      }
-    });
+    for (let k = 0; k < outer.length; k++) {
+      const e = outer[k]!;
+      take(box, e.x, e.y);
+      if (e.bulge !== 0) takeArc(box, e, outer[k + 1 === outer.length ? 0 : k + 1]!);
+    }
   }
-  return x1 < x0 ? undefined : { x0, y0, x1, y1 };
+  return box.x1 < box.x0 ? undefined : box;
+}
+
+function take(box: { x0: number; y0: number; x1: number; y1: number }, x: number, y: number): void {
+  box.x0 = Math.min(box.x0, x);
+  box.y0 = Math.min(box.y0, y);
+  box.x1 = Math.max(box.x1, x);
+  box.y1 = Math.max(box.y1, y);
+}
+
+function takeArc(box: Parameters<typeof take>[0], e: Edge, next: Edge): void {
+  const c = curve(e.x, e.y, next.x, next.y, e.bulge);
+  const r = Math.abs(1 / c.curvature);
+  const sweep = 4 * Math.atan(e.bulge);
+  const [ax, ay] = [c.x0 - c.cx, c.y0 - c.cy];
+  if (onArc(ax, ay, sweep, 1, 0)) take(box, c.cx + r, c.cy);
+  if (onArc(ax, ay, sweep, 0, 1)) take(box, c.cx, c.cy + r);
+  if (onArc(ax, ay, sweep, -1, 0)) take(box, c.cx - r, c.cy);
+  if (onArc(ax, ay, sweep, 0, -1)) take(box, c.cx, c.cy - r);
 }
 
 /** Whether direction (ux, uy) lies within `sweep` of (ax, ay), counter-clockwise positive. */
@@ -142,14 +157,8 @@ export function united(boxes: readonly Box[]): Box {
 }
 
 /** All loops as polygons in whole nanometres, holes clockwise, less those that rounding leaves nothing of. */
-export function flatPaths(shape: Shape, chordError: number): Path64[] {
-  const paths: Path64[] = [];
-  for (const loop of shape) {
-    const points = flatten(loop, chordError);
-    if (points.length > 2) paths.push(points.map(([x, y]) => ({ x, y })));
-  }
-  return paths;
-}
+export const flatPaths = (shape: Shape, chordError: number): Paths64 =>
+  pathsOf(polygonsOf([shape], chordError));
 
 /** What no mask holds, nm: edges this short are rounding, and bodies less wide than this slivers. */
 const LEAST = 1;
@@ -158,23 +167,31 @@ const FLAT = 0.01;
 
 /** The shape without edges that are only rounding and without loops that are slivers; nothing where no more is left. */
 export function tidied(shape: Shape): Shape[] {
-  const loops = shape.map(withoutShortEdges);
-  const wide = loops.filter((loop) => {
-    if (loop.length < 2) return false;
-    return 2 * Math.abs(areaOf([[loop]])) > LEAST * perimeterOf([[loop]]);
-  });
-  return loops.length > 0 && wide[0] === loops[0] ? [wide] : [];
+  const wide: (readonly Edge[])[] = [];
+  for (let i = 0; i < shape.length; i++) {
+    const loop = withoutShortEdges(shape[i]!);
+    if (loop.length >= 2 && Math.abs(twiceArea(loop)) > LEAST * lengthOfLoop(loop)) wide.push(loop);
+    else if (i === 0) return [];
+  }
+  return wide.length > 0 ? [wide] : [];
 }
 
 function withoutShortEdges(loop: readonly Edge[]): readonly Edge[] {
   const n = loop.length;
-  const long: Edge[] = [];
-  loop.forEach((e, k) => {
+  let kept: Edge[] | undefined;
+  for (let k = 0; k < n; k++) {
+    const e = loop[k]!;
     const next = loop[k + 1 === n ? 0 : k + 1]!;
-    const chord = Math.hypot(next.x - e.x, next.y - e.y);
-    if (chord < LEAST) return;
+    const dx = next.x - e.x;
+    const dy = next.y - e.y;
+    const chord = Math.sqrt(dx * dx + dy * dy);
     const flat = e.bulge !== 0 && Math.abs(e.bulge) * chord < 2 * FLAT;
-    long.push(flat ? { ...e, bulge: 0 } : e);
-  });
-  return long;
+    if (chord >= LEAST && !flat) {
+      kept?.push(e);
+      continue;
+    }
+    kept ??= loop.slice(0, k);
+    if (chord >= LEAST) kept.push({ ...e, bulge: 0 });
+  }
+  return kept ?? loop;
 }

@@ -1,12 +1,23 @@
-import { type Curve, tangentAt } from './curve.ts';
+import type { Curve } from './curve.ts';
 
-export type PlanBox = readonly [x0: number, y0: number, x1: number, y1: number];
-
-/** The box round what an element covers that reaches `half` to either side, square at both ends, and `room` more; nm. */
-export function bodyBox(c: Curve, half: number, room: number): PlanBox {
-  const [vx, vy] = tangentAt(c, c.length);
-  const [ax, ay] = [Math.abs(c.uy) * half, Math.abs(c.ux) * half];
-  const [bx, by] = [Math.abs(vy) * half, Math.abs(vx) * half];
+/**
+ * The box round what an element covers that reaches `half` to either side, square at both ends, and `room` more, nm:
+ * least x, least y, greatest x, greatest y into box[at … at + 3].
+ */
+export function bodyBox(c: Curve, half: number, room: number, box: Float64Array, at: number): void {
+  let vx = c.ux;
+  let vy = c.uy;
+  if (c.curvature !== 0) {
+    const a = c.curvature * c.length;
+    const cos = Math.cos(a);
+    const sin = Math.sin(a);
+    vx = c.ux * cos - c.uy * sin;
+    vy = c.uy * cos + c.ux * sin;
+  }
+  const ax = Math.abs(c.uy) * half;
+  const ay = Math.abs(c.ux) * half;
+  const bx = Math.abs(vy) * half;
+  const by = Math.abs(vx) * half;
   let x0 = Math.min(c.x0 - ax, c.x1 - bx);
   let y0 = Math.min(c.y0 - ay, c.y1 - by);
   let x1 = Math.max(c.x0 + ax, c.x1 + bx);
@@ -26,5 +37,8 @@ export function bodyBox(c: Curve, half: number, room: number): PlanBox {
       else y0 = Math.min(y0, c.cy - outer);
     }
   }
-  return [x0 - room, y0 - room, x1 + room, y1 + room];
+  box[at] = x0 - room;
+  box[at + 1] = y0 - room;
+  box[at + 2] = x1 + room;
+  box[at + 3] = y1 + room;
 }

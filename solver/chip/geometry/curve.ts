@@ -59,14 +59,25 @@ export function curve(x0: number, y0: number, x1: number, y1: number, bulge: num
   };
 }
 
+/** Length of the same, where nothing else of it is asked. */
+export function lengthOf(x0: number, y0: number, x1: number, y1: number, bulge: number): number {
+  const dx = x1 - x0;
+  const dy = y1 - y0;
+  const chord = Math.sqrt(dx * dx + dy * dy);
+  if (bulge === 0) return chord;
+  const sweep = 4 * Math.atan(bulge);
+  return sweep / ((2 * Math.sin(sweep / 2)) / chord);
+}
+
 export function reversed(c: Curve): Curve {
   return curve(c.x1, c.y1, c.x0, c.y0, -c.bulge);
 }
 
 /** The part of `c` between two distances along it, from < to. */
 export function part(c: Curve, from: number, to: number): Curve {
-  const [x0, y0] = from <= 0 ? [c.x0, c.y0] : pointAt(c, from);
-  const [x1, y1] = to >= c.length ? [c.x1, c.y1] : pointAt(c, to);
+  let { x0, y0, x1, y1 } = c;
+  if (from > 0) [x0, y0] = pointAt(c, from);
+  if (to < c.length) [x1, y1] = pointAt(c, to);
   const sweep = c.curvature * (Math.min(to, c.length) - Math.max(from, 0));
   return curve(x0, y0, x1, y1, c.bulge === 0 ? 0 : Math.tan(sweep / 4));
 }

@@ -14,24 +14,31 @@ const SAME = 0.05;
  */
 export function restoreLoop(path: Path64, grid: Grid, edges: TrueEdges): Edge[] {
   const n = path.length;
-  const x = path.map((p) => p.x / grid.scale + grid.x);
-  const y = path.map((p) => p.y / grid.scale + grid.y);
-  const slack = 1.5 / grid.scale;
+  const { scale } = grid;
+  const slack = 1.5 / scale;
   let runs: Run[] = [];
+  let last: Run | undefined;
+  let x1 = path[0]!.x / scale + grid.x;
+  let y1 = path[0]!.y / scale + grid.y;
   for (let k = 0; k < n; k++) {
-    const j = k + 1 === n ? 0 : k + 1;
-    const open = runs[runs.length - 1];
-    if (open && !edges.labelled && staysOn(open.source.curve, x[k]!, y[k]!, x[j]!, y[j]!)) {
-      open.x1 = x[j]!;
-      open.y1 = y[j]!;
+    const to = path[k + 1 === n ? 0 : k + 1]!;
+    const x0 = x1;
+    const y0 = y1;
+    x1 = to.x / scale + grid.x;
+    y1 = to.y / scale + grid.y;
+    if (last && !edges.labelled && staysOn(last.source.curve, x0, y0, x1, y1)) {
+      last.x1 = x1;
+      last.y1 = y1;
       continue;
     }
-    const source = sourceUnder(edges.near(x[k]!, y[k]!, x[j]!, y[j]!), x[k]!, y[k]!, x[j]!, y[j]!, slack);
-    const last = runs[runs.length - 1];
+    const source = sourceUnder(edges.near(x0, y0, x1, y1), x0, y0, x1, y1, slack);
     if (last && sameEdge(last.source, source)) {
-      last.x1 = x[j]!;
-      last.y1 = y[j]!;
-    } else runs.push({ source, x0: x[k]!, y0: y[k]!, x1: x[j]!, y1: y[j]! });
+      last.x1 = x1;
+      last.y1 = y1;
+    } else {
+      last = { source, x0, y0, x1, y1 };
+      runs.push(last);
+    }
   }
   runs = joinRound(dropSlivers(joinRound(runs), slack));
   if (runs.length === 1) return wholeCircle(runs[0]!);
@@ -49,8 +56,15 @@ function staysOn(c: Curve, x0: number, y0: number, x1: number, y1: number): bool
   if (arcOff(c, r, free, x1, y1) > 0 || arcOff(c, r, free, (x0 + x1) / 2, (y0 + y1) / 2) > 0) return false;
   const d = alongArc(c, x1, y1);
   if (d < 0 || d > c.length) return false;
-  const [tx, ty] = tangentAt(c, d);
-  return (x1 - x0) * tx + (y1 - y0) * ty > 0;
+  return runsAlong(c, d, x1 - x0, y1 - y0);
+}
+
+/** Whether a direction is forward on an arc at a distance along it. */
+function runsAlong(c: Curve, d: number, dx: number, dy: number): boolean {
+  const a = c.curvature * d;
+  const cos = Math.cos(a);
+  const sin = Math.sin(a);
+  return dx * (c.ux * cos - c.uy * sin) + dy * (c.uy * cos + c.ux * sin) > 0;
 }
 
 /** The true edges of all bodies, with an index where there are many. */
@@ -62,7 +76,9 @@ export class TrueEdges {
 
   constructor(all: readonly Source[]) {
     this.#all = all;
-    this.labelled = all.some(({ tag, curve: c }) => tag !== 0 && c.curvature !== 0);
+    let labelled = false;
+    for (const { tag, curve: c } of all) if (tag !== 0 && c.curvature !== 0) labelled = true;
+    this.labelled = labelled;
     if (all.length <= 48) return;
     const index = new Flatbush(all.length);
     for (const { curve: c } of all) {
@@ -84,10 +100,16 @@ export class TrueEdges {
     const y = (y0 + y1) / 2;
     for (let reach = 40; ; reach *= 8) {
       const found = this.#index.search(x - reach, y - reach, x + reach, y + reach);
-      if (found.length > 0 || reach > 1e10) return found.sort((a, b) => a - b).map((i) => this.#all[i]!);
+      if (found.length === 0 && reach <= 1e10) continue;
+      found.sort(ascending);
+      const near: Source[] = [];
+      for (const i of found) near.push(this.#all[i]!);
+      return near;
     }
   }
 }
+
+const ascending = (a: number, b: number): number => a - b;
 
 /** The loop from its leftmost, then lowest corner on, so that equal outlines are equal lists. */
 function fromLeast(loop: Edge[]): Edge[] {
@@ -96,7 +118,7 @@ function fromLeast(loop: Edge[]): Edge[] {
     const dx = loop[i]!.x - loop[k]!.x;
     if (dx < -SAME || (dx <= SAME && loop[i]!.y < loop[k]!.y)) k = i;
   }
-  return [...loop.slice(k), ...loop.slice(0, k)];
+  return k === 0 ? loop : [...loop.slice(k), ...loop.slice(0, k)];
 }
 
 interface Run {
@@ -133,12 +155,14 @@ function joinRound(runs: Run[]): Run[] {
 function dropSlivers(runs: Run[], slack: number): Run[] {
   const n = runs.length;
   if (n < 3) return runs;
-  const kept = runs.filter((r, k) => {
+  const kept: Run[] = [];
+  for (let k = 0; k < n; k++) {
+    const r = runs[k]!;
     const length = Math.hypot(r.x1 - r.x0, r.y1 - r.y0);
     const before = runs[(k + n - 1) % n]!.source.curve;
     const after = runs[(k + 1) % n]!.source.curve;
-    return length > 4 * slack + chordError(before) + chordError(after);
-  });
+    if (length > 4 * slack + chordError(before) + chordError(after)) kept.push(r);
+  }
   return kept.length > 1 ? kept : runs;
 }
 
@@ -173,8 +197,7 @@ function sourceUnder(
       off = Math.abs(a) + Math.abs(b) + beyond;
     } else {
       const d = nearest(c, mx, my);
-      const [tx, ty] = tangentAt(c, d);
-      if (dx * tx + dy * ty <= 0) continue;
+      if (!runsAlong(c, d, dx, dy)) continue;
       const r = Math.abs(1 / c.curvature);
       const free = sagitta(r) * 2;
       off = arcOff(c, r, free, x0, y0) + arcOff(c, r, free, x1, y1) + arcOff(c, r, free, mx, my);
@@ -221,26 +244,23 @@ function supportOff(c: Curve, x: number, y: number): number {
 
 function corners(runs: readonly Run[]): Edge[] {
   const n = runs.length;
-  const px: number[] = [];
-  const py: number[] = [];
+  const at = { x: 0, y: 0 };
+  const px = new Float64Array(n);
+  const py = new Float64Array(n);
   for (let k = 0; k < n; k++) {
-    const before = runs[(k + n - 1) % n]!;
+    const before = runs[k === 0 ? n - 1 : k - 1]!;
     const after = runs[k]!;
     const reach = Math.hypot(after.x0 - before.x1, after.y0 - before.y1);
-    const [vx, vy] = trueCorner(
-      before.source.curve,
-      after.source.curve,
-      (before.x1 + after.x0) / 2,
-      (before.y1 + after.y0) / 2,
-      reach,
-    );
-    px.push(vx);
-    py.push(vy);
+    at.x = (before.x1 + after.x0) / 2;
+    at.y = (before.y1 + after.y0) / 2;
+    moveToCorner(before.source.curve, after.source.curve, at, reach);
+    px[k] = at.x;
+    py[k] = at.y;
   }
   const edges: Edge[] = [];
   for (let k = 0; k < n; k++) {
-    const j = (k + 1) % n;
-    const c = runs[k]!.source.curve;
+    const j = k + 1 === n ? 0 : k + 1;
+    const { curve: c, tag } = runs[k]!.source;
     let bulge = 0;
     if (c.curvature !== 0) {
       const a0 = Math.atan2(py[k]! - c.cy, px[k]! - c.cx);
@@ -250,45 +270,69 @@ function corners(runs: readonly Run[]): Edge[] {
       if (c.curvature < 0 && sweep > 0) sweep -= 2 * Math.PI;
       bulge = Math.tan(sweep / 4);
     }
-    edges.push({ x: px[k]!, y: py[k]!, bulge, tag: runs[k]!.source.tag });
+    edges.push({ x: px[k]!, y: py[k]!, bulge, tag });
   }
   return edges;
 }
 
-/** Where two true edges meet near (x, y). */
-function trueCorner(a: Curve, b: Curve, x: number, y: number, reach: number): [number, number] {
-  const error = chordError(a) + chordError(b);
-  const within = 40 * error + 4 * reach + 20;
-  let best: [number, number] | undefined;
-  let least = within;
-  const offer = (qx: number, qy: number) => {
-    const off = Math.hypot(qx - x, qy - y);
-    if (off < least) {
-      least = off;
-      best = [qx, qy];
-    }
-  };
-  // tangent edges meet at a shared end point better than at a computed crossing
-  for (const c of [a, b]) {
-    for (const [qx, qy] of [
-      [c.x0, c.y0],
-      [c.x1, c.y1],
-    ] as const) {
-      if (supportOff(a, qx, qy) <= SAME && supportOff(b, qx, qy) <= SAME) offer(qx, qy);
-    }
-  }
-  const shared = best;
-  best = undefined;
-  least = within;
-  crossSupports(a, b, offer);
-  const crossing = best as [number, number] | undefined;
-  if (crossing && !shallow(a, b, crossing)) return crossing;
-  return shared ?? crossing ?? [x, y];
+/** The best of the places offered for a corner near (nearX, nearY): the nearest, less than `off` from it. */
+interface Offer {
+  readonly nearX: number;
+  readonly nearY: number;
+  x: number;
+  y: number;
+  off: number;
+  made: boolean;
 }
 
-function shallow(a: Curve, b: Curve, p: readonly [number, number]): boolean {
-  const [ax, ay] = directionAt(a, p[0], p[1]);
-  const [bx, by] = directionAt(b, p[0], p[1]);
+const noOffer = (nearX: number, nearY: number, within: number): Offer => ({
+  nearX,
+  nearY,
+  x: 0,
+  y: 0,
+  off: within,
+  made: false,
+});
+
+function offer(best: Offer, x: number, y: number): void {
+  const off = Math.hypot(x - best.nearX, y - best.nearY);
+  if (!(off < best.off)) return;
+  best.off = off;
+  best.x = x;
+  best.y = y;
+  best.made = true;
+}
+
+/** Moves a point to where two true edges meet near it. */
+function moveToCorner(a: Curve, b: Curve, at: { x: number; y: number }, reach: number): void {
+  const error = chordError(a) + chordError(b);
+  const within = 40 * error + 4 * reach + 20;
+  const crossing = noOffer(at.x, at.y, within);
+  crossSupports(a, b, crossing);
+  if (crossing.made && !shallow(a, b, crossing.x, crossing.y)) {
+    at.x = crossing.x;
+    at.y = crossing.y;
+    return;
+  }
+  // tangent edges meet at a shared end point better than at a computed crossing
+  const shared = noOffer(at.x, at.y, within);
+  offerShared(a, b, a.x0, a.y0, shared);
+  offerShared(a, b, a.x1, a.y1, shared);
+  offerShared(a, b, b.x0, b.y0, shared);
+  offerShared(a, b, b.x1, b.y1, shared);
+  const best = shared.made ? shared : crossing;
+  if (!best.made) return;
+  at.x = best.x;
+  at.y = best.y;
+}
+
+function offerShared(a: Curve, b: Curve, x: number, y: number, best: Offer): void {
+  if (supportOff(a, x, y) <= SAME && supportOff(b, x, y) <= SAME) offer(best, x, y);
+}
+
+function shallow(a: Curve, b: Curve, x: number, y: number): boolean {
+  const [ax, ay] = directionAt(a, x, y);
+  const [bx, by] = directionAt(b, x, y);
   return Math.abs(ax * by - ay * bx) < 0.02;
 }
 
@@ -296,17 +340,17 @@ function directionAt(c: Curve, x: number, y: number): [number, number] {
   return c.curvature === 0 ? [c.ux, c.uy] : tangentAt(c, alongArc(c, x, y));
 }
 
-function crossSupports(a: Curve, b: Curve, offer: (x: number, y: number) => void): void {
+function crossSupports(a: Curve, b: Curve, best: Offer): void {
   if (a.curvature === 0 && b.curvature === 0) {
     const sine = a.ux * b.uy - a.uy * b.ux;
     if (Math.abs(sine) < 1e-12) return;
     const t = ((b.x0 - a.x0) * b.uy - (b.y0 - a.y0) * b.ux) / sine;
-    offer(a.x0 + a.ux * t, a.y0 + a.uy * t);
+    offer(best, a.x0 + a.ux * t, a.y0 + a.uy * t);
     return;
   }
   if (a.curvature === 0 || b.curvature === 0) {
-    if (a.curvature === 0) crossLineCircle(a, b, offer);
-    else crossLineCircle(b, a, offer);
+    if (a.curvature === 0) crossLineCircle(a, b, best);
+    else crossLineCircle(b, a, best);
     return;
   }
   const ra = Math.abs(1 / a.curvature);
@@ -317,17 +361,19 @@ function crossSupports(a: Curve, b: Curve, offer: (x: number, y: number) => void
   if (d === 0) return;
   const along = (d * d + (ra - rb) * (ra + rb)) / (2 * d);
   const half = Math.sqrt(Math.max(0, (ra - along) * (ra + along)));
-  for (const s of [-half, half]) {
-    offer(a.cx + (dx * along - dy * s) / d, a.cy + (dy * along + dx * s) / d);
+  for (let side = -1; side <= 1; side += 2) {
+    const s = side * half;
+    offer(best, a.cx + (dx * along - dy * s) / d, a.cy + (dy * along + dx * s) / d);
   }
 }
 
-function crossLineCircle(a: Curve, b: Curve, offer: (x: number, y: number) => void): void {
+function crossLineCircle(a: Curve, b: Curve, best: Offer): void {
   const r = Math.abs(1 / b.curvature);
   const along = (b.cx - a.x0) * a.ux + (b.cy - a.y0) * a.uy;
   const off = Math.abs((b.cx - a.x0) * a.uy - (b.cy - a.y0) * a.ux);
   const half = Math.sqrt(Math.max(0, (r - off) * (r + off)));
-  for (const s of [along - half, along + half]) offer(a.x0 + a.ux * s, a.y0 + a.uy * s);
+  offer(best, a.x0 + a.ux * (along - half), a.y0 + a.uy * (along - half));
+  offer(best, a.x0 + a.ux * (along + half), a.y0 + a.uy * (along + half));
 }
 
 /** A loop that is one circle all round, as two halves. */

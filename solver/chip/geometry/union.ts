@@ -7,8 +7,8 @@ import {
   type PolyPath64,
   PolyTree64,
 } from 'clipper2-ts';
-import type { Shape } from '../../mesh/mesh.ts';
-import { flipped, type Patch } from './patch.ts';
+import type { Edge, Shape } from '../../mesh/mesh.ts';
+import { flipped, type Patch, type Source } from './patch.ts';
 import { restoreLoop, TrueEdges } from './restore.ts';
 
 /** Coordinates scaled to at most this stay clear of the library's slow exact products. */
@@ -63,31 +63,39 @@ export function unite(patches: readonly Patch[], minus: readonly Patch[] = []): 
   if (patches.length === 0) return [];
   const grid = gridFor(patches);
   const clipper = new Clipper64();
-  clipper.addSubject(patches.map((p) => toGrid(p, grid)));
+  const sources = new Set<Source>();
+  const subject: Paths64 = [];
+  for (const p of patches) {
+    subject.push(toGrid(p, grid));
+    for (const source of p.source) sources.add(source);
+  }
+  clipper.addSubject(subject);
   if (minus.length > 0) clipper.addClip(minus.map((p) => toGrid(p, grid)));
+  // what bounds the fluid from within runs the other way round
+  for (const p of minus) for (const source of flipped(p).source) sources.add(source);
   const tree = new PolyTree64();
   clipper.execute(minus.length > 0 ? ClipType.Difference : ClipType.Union, FillRule.NonZero, tree);
-  // what bounds the fluid from within runs the other way round
-  const all = [...patches, ...minus.map(flipped)];
-  const edges = new TrueEdges([...new Set(all.flatMap((p) => p.source))]);
   const shapes: Shape[] = [];
-  collect(tree, (outer, holes) => {
-    const loops = [outer, ...holes].map((path) => restoreLoop(path, grid, edges)).filter((l) => l.length > 0);
-    if (loops.length > 0) shapes.push(loops);
-  });
+  addShapes(tree, grid, new TrueEdges([...sources]), shapes);
   return shapes;
 }
 
-/** Calls `found` for every outer polygon with its holes. */
-function collect(tree: PolyPath64, found: (outer: Path64, holes: Paths64) => void): void {
+/** Every outer polygon with its holes, led back to true edges. */
+function addShapes(tree: PolyPath64, grid: Grid, edges: TrueEdges, shapes: Shape[]): void {
   for (let i = 0; i < tree.count; i++) {
     const outer = tree.child(i);
-    const holes: Paths64 = [];
+    const loops: Edge[][] = [];
+    addLoop(outer, grid, edges, loops);
     for (let k = 0; k < outer.count; k++) {
       const hole = outer.child(k);
-      holes.push(hole.poly!);
-      collect(hole, found);
+      addLoop(hole, grid, edges, loops);
+      addShapes(hole, grid, edges, shapes);
     }
-    found(outer.poly!, holes);
+    if (loops.length > 0) shapes.push(loops);
   }
+}
+
+function addLoop(polygon: PolyPath64, grid: Grid, edges: TrueEdges, loops: Edge[][]): void {
+  const loop = restoreLoop(polygon.poly!, grid, edges);
+  if (loop.length > 0) loops.push(loop);
 }
