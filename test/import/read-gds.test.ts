@@ -53,6 +53,35 @@ test('an array of two columns and three rows, from its three points', () => {
   ]);
 });
 
+test('an array of what is mirrored, magnified and turned: pitches are those of the plan', () => {
+  const aref = [
+    ...record(0x0b, 0),
+    ...record(0x12, 6, 'C'),
+    ...MIRROR,
+    ...MAG,
+    ...ANGLE,
+    ...record(0x13, 2, [2, 1]),
+    // turned with what it places: columns go up, rows to the left
+    ...record(0x10, 3, [100, 100, 100, 200, 70, 100]),
+    ...record(0x11, 0),
+  ];
+  // (x, y) mirrored, twice and a quarter turn is (2 y, 2 x)
+  expect(loops({ TOP: [aref], C: [boundary([0, 0, 10, 0, 10, 5])] })).toEqual([
+    [100, 100, 0, 100, 120, 0, 110, 120, 0],
+    [100, 150, 0, 100, 170, 0, 110, 170, 0],
+  ]);
+});
+
+test('several structures that none places are all taken, and that is said', () => {
+  const drawing = drawingOf(
+    gds({ A: [boundary([0, 0, 10, 0, 10, 5])], B: [boundary([20, 0, 30, 0, 30, 5])] }),
+  );
+  expect(layerOf(drawing, '1/0').regions).toHaveLength(2);
+  expect(drawing.assumed).toEqual([
+    'No structure places "A", "B": all were taken, each where its own coordinates have it.',
+  ]);
+});
+
 test('paths: flush, square and given ends, width absolute where negative', () => {
   const path = (more: readonly number[], width: number): number[] => [
     ...record(0x09, 0),

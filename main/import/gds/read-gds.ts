@@ -40,6 +40,9 @@ const PLAIN = new Set([
   0x37, 0x38, 0x39, 0x3a, 0x3b,
 ]);
 
+/** Structures told by name where there are several to begin with. */
+const MOST_NAMED = 5;
+
 interface Library {
   readonly structures: Map<string, Element[]>;
   /** Metres of a database unit. */
@@ -61,6 +64,13 @@ export function readGds(bytes: Uint8Array, work: Work): Drawing {
       'Every structure is placed inside another: the references go round in a circle.',
       '',
       'Take the reference out that closes the circle.',
+    );
+  }
+  if (tops.length > 1) {
+    const some = tops.slice(0, MOST_NAMED).map((name) => `"${name.slice(0, LIMITS.name)}"`);
+    const more = tops.length > MOST_NAMED ? ` and ${tops.length - MOST_NAMED} more` : '';
+    gathering.assume(
+      `No structure places ${some.join(', ')}${more}: all were taken, each where its own coordinates have it.`,
     );
   }
   const placer = new Placer(gathering, library.structures);
