@@ -116,7 +116,6 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
           ramp: d.shown.ramp,
         });
         art.draw(ctx, d.shown, camera, size, look);
-        drawPicked(ctx, desk, camera, size, look);
       })(),
     flow: (ctx) =>
       frame((d, { camera, size }) => {
@@ -139,6 +138,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         drawPortWords(ctx, d.ports, camera, size, look, room, edge, d.spatial);
         drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, d.spatial);
         drawScaleBar(ctx, camera, size, look);
+        drawPicked(ctx, desk, camera, size, look);
       })(),
     hand: (ctx) =>
       frame((d, { camera, size }) => {
@@ -184,7 +184,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         painter.redraw('chip', 'flow', 'marks');
       if (view.selection !== before.selection || view.tool !== before.tool) painter.redraw('hand');
     }),
-    underlayOf(desk).subscribe(() => painter.redraw('chip')),
+    underlayOf(desk).subscribe(() => painter.redraw('chip', 'marks')),
     desk.project.subscribe(drawEdit),
     () => clearTimeout(owed),
     desk.solver.solved.subscribe(drawAnswer),
