@@ -1,4 +1,5 @@
 import type { Layer } from '../chip/chip.ts';
+import type { Piece } from '../chip/graph.ts';
 import type { Evidence, StretchEvidence } from './evidence.ts';
 import type { Found, Gathered } from './gather.ts';
 import { CREEPING, entranceError, entranceLength, softRoofError } from './leave-out.ts';
@@ -22,10 +23,8 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
   for (const stretch of evidence.stretches) {
     const piece = graph.pieces[stretch.piece]!;
     const layer = chip.layers[piece.layerIndex]!;
-    const half = piece.path.length >> 1;
-    const [p, q] = [piece.path[half - 1]!, piece.path[half]!];
-    const base = { where: stretch.name, at: placeOf((p.x + q.x) / 2, (p.y + q.y) / 2) };
-    const add = (finding: Omit<Found, 'where' | 'at'>): void => found.add({ ...finding, ...base });
+    const add = (finding: Omit<Found, 'where' | 'at'>): void =>
+      found.add({ ...finding, where: stretch.name, at: midst(piece) });
     const reynolds = stretch.result.reynolds ?? 0;
     if (reynolds > TURBULENT) {
       add({
@@ -39,7 +38,7 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
       });
     } else if (reynolds > CREEPING) entrance(stretch, reynolds, fluid.density, add);
     const depth = chip.channels[piece.channelIndex]!.depth ?? layer.depth;
-    const narrow = Math.min(...stretch.width, depth / METRE);
+    const narrow = Math.min(stretch.width[0], stretch.width[1], depth / METRE);
     if (bloody && narrow < BLOOD) {
       add({
         kind: 'blood-narrow',
@@ -56,6 +55,14 @@ export function checkTrust(evidence: Evidence, rules: ProcessRules | null, found
   flatChannels(evidence, found);
   junctions(evidence, found);
   temperature(evidence, found);
+}
+
+/** Middle of a piece's path, m. */
+function midst({ path }: Piece): readonly [number, number] {
+  const half = path.length >> 1;
+  const p = path[half - 1]!;
+  const q = path[half]!;
+  return placeOf((p.x + q.x) / 2, (p.y + q.y) / 2);
 }
 
 /** Junctions solved less exactly than was asked, or with upright walls in place of their own. */

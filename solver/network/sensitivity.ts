@@ -1,6 +1,5 @@
 import { solve } from '../sparse/solve.ts';
 import type { Edges } from './edges.ts';
-import { once } from './once.ts';
 import type { PreparedNetwork } from './prepare.ts';
 import type { NetworkSolution, NetworkSpec } from './spec.ts';
 
@@ -118,33 +117,61 @@ export function gradientsBy(
   targets: readonly Target[],
   weights: readonly Float64Array[],
 ): Gradient[] {
-  const { from, to } = network.edges;
-  return targets.map(({ of, index }, t) => {
-    const weight = weights[t];
-    // most who ask need one of these or none, and they cost more than the rest
-    const byResistance = once(() => {
-      const found = new Float64Array(spec.resistance.length);
-      for (let e = 0; e < found.length; e += 1) {
-        found[e] = (weight[from[e]] - weight[to[e]]) * solution.ductFlow[e];
-      }
-      if (of === 'duct') found[index] -= solution.ductFlow[index];
-      return found;
-    });
-    const byBlock = once(() => blockGradient(spec, network, solution, weight));
-    const byDrive = once(() => driveGradient(spec, network, targets[t], weight));
-    return {
-      weight,
-      get byResistance() {
-        return byResistance();
-      },
-      get byBlock() {
-        return byBlock();
-      },
-      get byDrive() {
-        return byDrive();
-      },
-    };
-  });
+  return targets.map((target, t) => new LazyGradient(spec, network, solution, target, weights[t]));
+}
+
+/** Most who ask need one of the lists or none, and these cost more than the weights. */
+class LazyGradient implements Gradient {
+  readonly weight: Float64Array;
+  readonly #spec: NetworkSpec;
+  readonly #network: PreparedNetwork;
+  readonly #solution: NetworkSolution;
+  readonly #target: Target;
+  #byResistance: Float64Array | null = null;
+  #byBlock: Float64Array | null = null;
+  #byDrive: Float64Array | null = null;
+
+  constructor(
+    spec: NetworkSpec,
+    network: PreparedNetwork,
+    solution: NetworkSolution,
+    target: Target,
+    weight: Float64Array,
+  ) {
+    this.#spec = spec;
+    this.#network = network;
+    this.#solution = solution;
+    this.#target = target;
+    this.weight = weight;
+  }
+
+  get byResistance(): Float64Array {
+    this.#byResistance ??= resistanceGradient(this.#network, this.#solution, this.#target, this.weight);
+    return this.#byResistance;
+  }
+
+  get byBlock(): Float64Array {
+    this.#byBlock ??= blockGradient(this.#spec, this.#network, this.#solution, this.weight);
+    return this.#byBlock;
+  }
+
+  get byDrive(): Float64Array {
+    this.#byDrive ??= driveGradient(this.#spec, this.#network, this.#target, this.weight);
+    return this.#byDrive;
+  }
+}
+
+function resistanceGradient(
+  { edges }: PreparedNetwork,
+  { ductFlow }: NetworkSolution,
+  { of, index }: Target,
+  weight: Float64Array,
+): Float64Array {
+  const { from, to } = edges;
+  const found = new Float64Array(ductFlow.length);
+  for (let e = 0; e < found.length; e += 1) found[e] = (weight[from[e]] - weight[to[e]]) * ductFlow[e];
+  if (of === 'duct') found[index] -= ductFlow[index];
+  return found;
 }
 
 /** Edges that end at a node, in order; found for all nodes when first asked for. */

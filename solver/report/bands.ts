@@ -79,37 +79,10 @@ export function bandsOf(
   const own = ports.map((): NonNullable<PortResult['band']> | null => null);
   const pairs = blockPairs(lumped);
   const powers = blockPowers(pairs, flow.pressure);
-  /** Of a flow q, and of its share of all that enters; of a duct's own flow, which one that is. */
-  const bandOf = ({ weight }: Gradient, q: number, duct: number): { flow: number; share: number } => {
-    const { ductFrom, ductTo } = lumped.spec;
-    let flowOff = 0;
-    let shareOff = 0;
-    for (let e = 0; e < ducts.length; e += 1) {
-      const drop = weight[ductFrom[e]] - weight[ductTo[e]] - (e === duct ? 1 : 0);
-      const by = (drop * flow.ductFlow[e]) / q;
-      flowOff += ducts[e] * Math.abs(by);
-      shareOff += ducts[e] * Math.abs(by - whole.byResistance[e]);
-    }
-    // Where a cell's matrix A is off by no more than a share of its energy, |λ·δA·p| ≤ share √(λ·A·λ) √(p·A·p).
-    const { start, a, b, conductance } = pairs;
-    for (let block = 0; block < blocks.length; block += 1) {
-      let ofFlow = 0;
-      let ofShare = 0;
-      for (let k = start[block]; k < start[block + 1]; k += 1) {
-        const drop = (weight[a[k]] - weight[b[k]]) / q;
-        const rest = drop - (whole.weight[a[k]] - whole.weight[b[k]]);
-        ofFlow += conductance[k] * drop * drop;
-        ofShare += conductance[k] * rest * rest;
-      }
-      const size = blocks[block] * Math.sqrt(powers[block]);
-      flowOff += size * Math.sqrt(Math.max(0, ofFlow));
-      shareOff += size * Math.sqrt(Math.max(0, ofShare));
-    }
-    return { flow: told(flowOff), share: told(shareOff) };
-  };
+  const known: Known = { lumped, flow, ducts, blocks, pairs, powers, whole };
   found.forEach((gradient, i) => {
     const { port, q } = drives[i];
-    own[port] = bandOf(gradient, q, -1);
+    own[port] = bandOf(known, gradient.weight, q, -1);
   });
   // What is not known of the viscosity shifts flows where pressures drive, pressures where flows do.
   const viscosity = fluid.uncertainty ?? 0;
@@ -121,7 +94,7 @@ export function bandsOf(
   const ofPieces = stretches.map((): NonNullable<PieceResult['band']> | null => null);
   streams.forEach(({ e, q }, i) => {
     const gradient = all[drives.length + i];
-    const { flow: own, share } = bandOf(gradient, q, e);
+    const { flow: own, share } = bandOf(known, gradient.weight, q, e);
     ofPieces[e] = {
       flow: own + (driven ? 0 : viscosity),
       share,
@@ -143,6 +116,56 @@ export function bandsOf(
       pressure: pressureBand(lumped, flow, ducts, blockErrors(solved, true)) + (driven ? viscosity : 0),
     },
   };
+}
+
+/** What the bands of all flows are made from. */
+interface Known {
+  readonly lumped: Lumped;
+  readonly flow: NetworkSolution;
+  /** Relative errors of ducts and blocks. */
+  readonly ducts: Float64Array;
+  readonly blocks: Float64Array;
+  readonly pairs: BlockPairs;
+  readonly powers: Float64Array;
+  /** Of all that enters. */
+  readonly whole: Pick<Gradient, 'byResistance' | 'weight'>;
+}
+
+/** Of a flow q of these weights, and of its share of all that enters; of a duct's own flow, which one that is. */
+function bandOf(
+  { lumped, flow, ducts, blocks, pairs, powers, whole }: Known,
+  weight: Float64Array,
+  q: number,
+  duct: number,
+): { readonly flow: number; readonly share: number } {
+  const { ductFrom, ductTo } = lumped.spec;
+  const { ductFlow } = flow;
+  const ofAll = whole.weight;
+  const byAll = whole.byResistance;
+  let flowOff = 0;
+  let shareOff = 0;
+  for (let e = 0; e < ducts.length; e += 1) {
+    const drop = weight[ductFrom[e]] - weight[ductTo[e]] - (e === duct ? 1 : 0);
+    const by = (drop * ductFlow[e]) / q;
+    flowOff += ducts[e] * Math.abs(by);
+    shareOff += ducts[e] * Math.abs(by - byAll[e]);
+  }
+  // Where a cell's matrix A is off by no more than a share of its energy, |λ·δA·p| ≤ share √(λ·A·λ) √(p·A·p).
+  const { start, a, b, conductance } = pairs;
+  for (let block = 0; block < blocks.length; block += 1) {
+    let ofFlow = 0;
+    let ofShare = 0;
+    for (let k = start[block]; k < start[block + 1]; k += 1) {
+      const drop = (weight[a[k]] - weight[b[k]]) / q;
+      const rest = drop - (ofAll[a[k]] - ofAll[b[k]]);
+      ofFlow += conductance[k] * drop * drop;
+      ofShare += conductance[k] * rest * rest;
+    }
+    const size = blocks[block] * Math.sqrt(powers[block]);
+    flowOff += size * Math.sqrt(Math.max(0, ofFlow));
+    shareOff += size * Math.sqrt(Math.max(0, ofShare));
+  }
+  return { flow: told(flowOff), share: told(shareOff) };
 }
 
 /** Of the peak of each cell: as far off as the flow around it that is off by most, and by its own error. */
