@@ -4,12 +4,17 @@ import type { ToolName } from '../tools/tool.ts';
 import type { Command } from './command.ts';
 
 const TOOLS: readonly (readonly [ToolName, string, string, string])[] = [
-  ['select', 'Select', 's', 'Choose and move parts; drag a box to choose many. Alt holds snapping off.'],
+  [
+    'select',
+    'Select',
+    's',
+    'Choose and move parts; drag a box to choose many. Alt or Ctrl holds snapping off.',
+  ],
   [
     'channel',
     'Channel',
     'c',
-    'Draw a channel point by point; type a length, an angle, a width at any moment. Alt holds snapping off.',
+    'Draw a channel point by point; type a length, an angle, a width at any moment. Alt or Ctrl holds snapping off.',
   ],
   ['chamber', 'Chamber', 'h', 'Draw a chamber; the key again changes from rectangle to round to polygon.'],
   ['port', 'Port', 'p', 'Set a port: click, or type its place.'],

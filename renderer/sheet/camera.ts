@@ -55,7 +55,7 @@ export interface Inset {
 }
 
 /** px kept free round the chip when it is fitted: its figures, the words beside its ports, the legend. */
-export const INSET: Inset = { left: 56, right: 56, top: 40, bottom: 76 };
+export const INSET: Inset = { left: 56, right: 56, top: 40, bottom: 92 };
 
 /** The camera that shows a box as large as the view allows, with px of `inset` kept free. */
 export function fitted(box: Box, size: Size, inset: Inset): Camera {
@@ -88,4 +88,15 @@ export function graduation(scale: number, apart: number): { readonly major: numb
       return { major: factor * power, minor: (factor * power) / (factor === 1 ? 10 : factor === 2 ? 4 : 5) };
   }
   return { major: 10 * power, minor: power };
+}
+
+/** The outline of the chip on the screen, px. */
+export function chipOnScreen(
+  outline: { readonly width: number; readonly height: number },
+  camera: Camera,
+  size: Size,
+): { readonly left: number; readonly right: number; readonly top: number; readonly bottom: number } {
+  const [left, bottom] = toScreen(camera, size, [0, 0]);
+  const [right, top] = toScreen(camera, size, [outline.width, outline.height]);
+  return { left, right, top, bottom };
 }

@@ -1,6 +1,6 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { FIGURE_FACE, type Palette, SIZES } from '../look/tokens.ts';
-import { type Camera, graduation, type Size, toScreen } from './camera.ts';
+import { type Camera, chipOnScreen, graduation, type Size, toScreen } from './camera.ts';
 import type { Room } from './room.ts';
 
 /** The chip's own graduated edge: it carries its measure on all four sides, numbered at top and left. */
@@ -76,9 +76,7 @@ const NUMBERED = 26;
 
 /** The places of the edge itself, so that no words run across it. */
 export function takeEdge(room: Room, chip: Pick<Chip, 'outline'>, camera: Camera, size: Size): void {
-  const { width, height } = chip.outline;
-  const [left, bottom] = toScreen(camera, size, [0, 0]);
-  const [right, top] = toScreen(camera, size, [width, height]);
+  const { left, right, top, bottom } = chipOnScreen(chip.outline, camera, size);
   const fill = (x: number, y: number, wide: number, high: number): void => {
     // only what is on the screen: near the chip its edges are far away and long
     const from = [Math.max(0, x), Math.max(0, y)] as const;

@@ -1,6 +1,6 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import { FIGURE_FACE, type Palette, SIZES } from '../look/tokens.ts';
-import { type Camera, type Size, toPlan, toScreen } from './camera.ts';
+import { type Camera, chipOnScreen, type Size, toPlan, toScreen } from './camera.ts';
 import { TICKS } from './edge.ts';
 import type { Room } from './room.ts';
 import type { Spatial } from './spatial.ts';
@@ -88,8 +88,7 @@ export function drawPortWords(
   spatial: Spatial,
 ): void {
   const covered = coverage(camera, size, spatial);
-  const [chipLeft, bottom] = toScreen(camera, size, [0, 0]);
-  const [chipRight] = toScreen(camera, size, [spatial.chip.outline.width, 0]);
+  const { left: chipLeft, right: chipRight, bottom } = chipOnScreen(spatial.chip.outline, camera, size);
   ctx.textBaseline = 'middle';
   for (const { port, name, figure, side, missed } of words) {
     const [x, y] = toScreen(camera, size, port.at);

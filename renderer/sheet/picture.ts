@@ -130,6 +130,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
         const room = new Room();
         const edge = new Room();
         takeEdge(edge, d.chip, camera, size);
+        takeFoot(room, size);
         for (const port of d.chip.ports) {
           const [x, y] = toScreen(camera, size, port.at);
           room.fill(x - 6, y - 6, 12, 12);
@@ -223,6 +224,17 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
     for (const stop of stops) stop();
     painter.destroy();
   };
+}
+
+/** px at the foot of the sheet that the legend and the bar of the scale stand on. */
+const LEGEND = { from: 30, wide: 520, high: 52 } as const;
+const SCALE = { wide: 150, high: 46 } as const;
+
+/** What would be written under the legend could not be read. */
+function takeFoot(room: Room, { width, height }: { readonly width: number; readonly height: number }): void {
+  const wide = Math.min(LEGEND.wide, width - LEGEND.from - SCALE.wide - 60);
+  if (wide > 0) room.fill(LEGEND.from, height - LEGEND.high, wide, LEGEND.high);
+  room.fill(width - SCALE.wide, height - SCALE.high, SCALE.wide, SCALE.high);
 }
 
 /** Whether the hand is at a field: then what it changes is no part of what it holds on the sheet. */

@@ -1,5 +1,5 @@
 import { FIGURE_FACE, type Palette, SIZES, TEXT_FACE } from '../look/tokens.ts';
-import { type Camera, type Size, toScreen } from './camera.ts';
+import { type Camera, chipOnScreen, type Size, toScreen } from './camera.ts';
 import { coverage, onScreen } from './marks.ts';
 import type { Room } from './room.ts';
 import type { Spatial } from './spatial.ts';
@@ -62,14 +62,12 @@ export function drawPlaceWords(
   spatial: Spatial,
 ): void {
   const covered = coverage(camera, size, spatial);
-  const { width, height } = spatial.chip.outline;
-  const [left0, bottom0] = toScreen(camera, size, [0, 0]);
-  const [right0, top0] = toScreen(camera, size, [width, height]);
+  const chip = chipOnScreen(spatial.chip.outline, camera, size);
   const inner = {
-    left: Math.max(0, left0),
-    right: Math.min(size.width, right0),
-    top: Math.max(0, top0),
-    bottom: Math.min(size.height - FOOT, bottom0),
+    left: Math.max(0, chip.left),
+    right: Math.min(size.width, chip.right),
+    top: Math.max(0, chip.top),
+    bottom: Math.min(size.height - FOOT, chip.bottom),
   };
   const rings: (readonly [number, number])[] = [];
   for (const entry of words) {

@@ -108,7 +108,8 @@ function watchPointer(
     const tool: ToolEvent = {
       kind,
       at: toPlan(camera, size, at(event)),
-      ...(event.altKey && { free: true }),
+      // some desktops keep Alt with the mouse for themselves
+      ...((event.altKey || event.ctrlKey || event.metaKey) && { free: true }),
       ...(event.shiftKey && { extend: true }),
     };
     bench.event(tool);

@@ -127,7 +127,7 @@ test('nonsense in the fields of every maker: kept, explained, never applied, nev
   const sheet = page.locator('.sheet-surface').first();
   /** What makes it, its box in mm, and how many fields it has beside those of the part. */
   const MAKERS = [
-    { key: 'r', title: 'Serpentine', from: '5, 80', to: '35, 65', fields: 5 },
+    { key: 'r', title: 'Serpentine', from: '5, 80', to: '35, 65', fields: 6 },
     { key: 't', title: 'Splitting tree', from: '45, 80', to: '75, 60', fields: 5 },
     { key: 'g', title: 'Gradient tree', from: '5, 55', to: '60, 35', fields: 6 },
     { key: 'w', title: 'Row of chambers', from: '5, 30', to: '60, 25', fields: 5 },

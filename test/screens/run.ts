@@ -256,6 +256,11 @@ for (const [state, go] of Object.entries(STATES)) {
         colorScheme: look.scheme,
         forcedColors: look.name === 'forced' ? 'active' : 'none',
       });
+      // the page has taken the colours when it says so
+      await sitting.page.waitForFunction(
+        (wanted) => getComputedStyle(document.documentElement).colorScheme === wanted,
+        look.scheme,
+      );
       await sitting.page.waitForTimeout(400);
       await sitting.page.screenshot({
         path: join(FOLDER, `${state.replaceAll(' ', '-')}-${look.name}.png`),
