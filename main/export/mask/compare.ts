@@ -36,7 +36,7 @@ export function compare(
   const curved = isCurved(loops);
   const error = curved ? Math.max(1, chordError / 8) : chordError;
   const wanted = polygonsOf(shapes, error);
-  const found = polygonsOfLoops(loops, error);
+  const found = curved || !isWhole(loops) ? polygonsOfLoops(loops, error) : loops;
   // what the chords take off the arcs is known; what they and the file lie apart is looked at
   let cut = 0;
   for (const shape of shapes) cut += chordLoss(shape, error);
@@ -50,6 +50,12 @@ const ROUNDING = Math.SQRT1_2;
 function isCurved({ bulge, points }: Loops): boolean {
   for (let k = 0; k < points; k++) if (bulge[k] !== 0) return true;
   return false;
+}
+
+/** Whether all points lie at whole nanometres. */
+function isWhole({ x, y, points }: Loops): boolean {
+  for (let k = 0; k < points; k++) if (!Number.isInteger(x[k]) || !Number.isInteger(y[k])) return false;
+  return true;
 }
 
 /** Area between the arcs of a shape and the chords that they are cut to. */

@@ -12,16 +12,24 @@ const UNLIKE = 0.25;
  * Area between two sets of polygons, outer ones counter-clockwise, holes clockwise, nm²: ground that both cover
  * equally often counts nothing, so what `b` covers twice and `a` once is told as well. Edges that both have, and
  * those that two polygons of one set have in opposite directions, cancel out; what is left are the closed outlines
- * of the difference. Where most of many edges are unlike, what is covered twice counts once.
+ * of the difference. Triangles among them, which every slanted edge leaves that was cut at a whole nanometre, are
+ * counted each, also where they lie on one another. Where most of many edges are unlike, what is covered twice counts
+ * once.
  */
 export function differenceOf(a: Loops, b: Loops): number {
   const edges = new Edges(a.points);
   edges.add(a, 1);
   edges.add(b, -1);
   const left = edges.left();
-  if (left.length > MANY && left.length > UNLIKE * (a.points + b.points))
-    return tiled(pathsOf(a), pathsOf(b));
-  return areaOf(union(loopsOf(left), FillRule.NonZero));
+  const count = left.length / 4;
+  if (count > MANY && count > UNLIKE * (a.points + b.points)) return tiled(pathsOf(a), pathsOf(b));
+  const loops: Paths64 = [];
+  let triangles = 0;
+  for (const loop of loopsOf(left)) {
+    if (loop.length === 3) triangles += Math.abs(area(loop));
+    else loops.push(loop);
+  }
+  return triangles + areaOf(union(loops, FillRule.NonZero));
 }
 
 function tiled(a: Paths64, b: Paths64): number {
@@ -31,8 +39,6 @@ function tiled(a: Paths64, b: Paths64): number {
 }
 
 const areaOf = (paths: Paths64): number => paths.reduce((sum, path) => sum + area(path), 0);
-
-type DirectedEdge = readonly [x0: number, y0: number, x1: number, y1: number];
 
 /** Directed edges with how often they are there; those along the axes point by point, the others as wholes. */
 class Edges {
@@ -113,22 +119,17 @@ class Edges {
     }
   }
 
-  left(): DirectedEdge[] {
-    const out: DirectedEdge[] = [];
+  /** From x, y to x, y: four numbers for each edge that is left. */
+  left(): number[] {
+    const out: number[] = [];
     const s = this.#slanted;
     for (let at = 0; at < 5 * this.#wholes; at += 5) {
-      const [x0, y0, x1, y1, times] = [s[at]!, s[at + 1]!, s[at + 2]!, s[at + 3]!, s[at + 4]!];
-      for (let k = 0; k < times; k++) out.push([x0, y0, x1, y1]);
-      for (let k = 0; k > times; k--) out.push([x1, y1, x0, y0]);
+      const times = s[at + 4]!;
+      for (let k = 0; k < times; k++) out.push(s[at]!, s[at + 1]!, s[at + 2]!, s[at + 3]!);
+      for (let k = 0; k > times; k--) out.push(s[at + 2]!, s[at + 3]!, s[at]!, s[at + 1]!);
     }
-    for (const [x, changes] of this.#upright)
-      walk(changes, (low, high) => {
-        out.push([x, low, x, high]);
-      });
-    for (const [y, changes] of this.#level)
-      walk(changes, (low, high) => {
-        out.push([low, y, high, y]);
-      });
+    for (const [x, changes] of this.#upright) walk(changes, x, true, out);
+    for (const [y, changes] of this.#level) walk(changes, y, false, out);
     return out;
   }
 }
@@ -139,17 +140,21 @@ function put(lines: Map<number, number[]>, line: number, from: number, to: numbe
   else lines.set(line, [from, times, to, -times]);
 }
 
-/** Calls `found` with each stretch along a line as often as edges are left there, in their direction. */
-function walk(changes: readonly number[], found: (from: number, to: number) => void): void {
-  const order = Array.from({ length: changes.length / 2 }, (_, k) => 2 * k);
-  order.sort((i, j) => changes[i]! - changes[j]!);
+/** Puts each stretch along a line into `out` as often as edges are left there, in their direction. */
+function walk(changes: readonly number[], line: number, upright: boolean, out: number[]): void {
+  const order = new Array<number>(changes.length / 2);
+  for (let k = 0; k < order.length; k++) order[k] = 2 * k;
+  if (order.length > 1) order.sort((i, j) => changes[i]! - changes[j]!);
   let times = 0;
   let before = 0;
   for (const k of order) {
     const at = changes[k]!;
     if (at > before) {
-      for (let i = 0; i < times; i++) found(before, at);
-      for (let i = 0; i > times; i--) found(at, before);
+      for (let i = 0; i < Math.abs(times); i++) {
+        const [from, to] = times > 0 ? [before, at] : [at, before];
+        if (upright) out.push(line, from, line, to);
+        else out.push(from, line, to, line);
+      }
     }
     times += changes[k + 1]!;
     before = at;
@@ -157,33 +162,83 @@ function walk(changes: readonly number[], found: (from: number, to: number) => v
 }
 
 /** Closed paths of edges of which as many lead to every point as away from it. */
-function loopsOf(edges: readonly DirectedEdge[]): Paths64 {
-  const away = new Map<string, { x: number; y: number }[]>();
-  const key = (x: number, y: number): string => `${x} ${y}`;
-  for (const [x0, y0, x1, y1] of edges) {
-    const to = { x: x1, y: y1 };
-    const known = away.get(key(x0, y0));
-    if (known) known.push(to);
-    else away.set(key(x0, y0), [to]);
+function loopsOf(edges: readonly number[]): Paths64 {
+  const count = edges.length / 4;
+  const points = new Points(2 * count);
+  const to = new Int32Array(count);
+  /** Latest edge away from each point that is not used yet, and the one before it from the same point; -1 for none. */
+  const away = new Int32Array(2 * count).fill(-1);
+  const earlier = new Int32Array(count);
+  for (let k = 0; k < count; k++) {
+    const from = points.number(edges[4 * k]!, edges[4 * k + 1]!);
+    to[k] = points.number(edges[4 * k + 2]!, edges[4 * k + 3]!);
+    earlier[k] = away[from]!;
+    away[from] = k;
   }
   const loops: Paths64 = [];
-  for (const [x, y] of edges) {
+  /** Where on the way each point is; -1 for those that are not. */
+  const place = new Int32Array(points.count).fill(-1);
+  for (let k = 0; k < count; k++) {
     // each return to a point of the way closes a loop, which is taken off it
-    const way: Path64 = [{ x, y }];
-    const seen = new Map([[key(x, y), 0]]);
-    for (let next = away.get(key(x, y))?.pop(); next; ) {
-      const here = key(next.x, next.y);
-      const met = seen.get(here);
-      if (met === undefined) {
-        seen.set(here, way.length);
-        way.push(next);
+    const start = points.number(edges[4 * k]!, edges[4 * k + 1]!);
+    const way = [start];
+    place[start] = 0;
+    for (let edge = away[start]!; edge >= 0; ) {
+      away[way[way.length - 1]!] = earlier[edge]!;
+      const here = to[edge]!;
+      const met = place[here]!;
+      if (met < 0) {
+        place[here] = way.length;
+        way.push(here);
       } else {
-        const loop = way.splice(met + 1);
-        for (const point of loop) seen.delete(key(point.x, point.y));
-        loops.push([way[met]!, ...loop]);
+        const loop: Path64 = [points.at(here)];
+        for (let i = met + 1; i < way.length; i++) {
+          place[way[i]!] = -1;
+          loop.push(points.at(way[i]!));
+        }
+        way.length = met + 1;
+        loops.push(loop);
       }
-      next = away.get(here)?.pop();
+      edge = away[here]!;
     }
+    for (const point of way) place[point] = -1;
   }
   return loops;
+}
+
+/** Numbers for places, from 0 as they come. */
+class Points {
+  count = 0;
+  readonly #x: Float64Array;
+  readonly #y: Float64Array;
+  /** Open addressing: numbers from 1. */
+  readonly #table: Int32Array;
+
+  constructor(most: number) {
+    this.#x = new Float64Array(most);
+    this.#y = new Float64Array(most);
+    this.#table = new Int32Array(2 ** Math.ceil(Math.log2(2 * most + 16)));
+  }
+
+  number(x: number, y: number): number {
+    const table = this.#table;
+    const mask = table.length - 1;
+    let hash = Math.imul(x, 0x9e3779b1) ^ Math.imul(y, 0x85ebca6b);
+    hash = Math.imul(hash ^ (hash >>> 15), 0x2c1b3c6d);
+    for (let place = (hash ^ (hash >>> 15)) & mask; ; place = (place + 1) & mask) {
+      const known = table[place]! - 1;
+      if (known < 0) {
+        this.#x[this.count] = x;
+        this.#y[this.count] = y;
+        this.count += 1;
+        table[place] = this.count;
+        return this.count - 1;
+      }
+      if (this.#x[known] === x && this.#y[known] === y) return known;
+    }
+  }
+
+  at(point: number): Path64[number] {
+    return { x: this.#x[point]!, y: this.#y[point]! };
+  }
 }

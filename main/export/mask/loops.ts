@@ -89,7 +89,10 @@ function withRoom(values: Float64Array, room: number): Float64Array<ArrayBuffer>
 
 /** The loops of shapes, with arcs cut into equal ones of at most `most` radians. */
 export function cutLoops(shapes: readonly Shape[], most: number): Loops {
-  const out = new Loops();
+  let edges = 0;
+  for (const shape of shapes) for (const loop of shape) edges += loop.length;
+  // of a few edges some are cut
+  const out = new Loops(3 * edges + 64);
   const limit = Math.tan(most / 4) * (1 + 1e-9);
   for (const shape of shapes) {
     for (const loop of shape) {
@@ -118,7 +121,7 @@ function addCut(out: Loops, e: Edge, next: Edge, most: number): void {
  * those that rounding leaves nothing of.
  */
 export function polygonsOf(shapes: readonly Shape[], error: number): Loops {
-  const out = new Loops();
+  const out = new Loops(chordCount(shapes, error));
   for (const shape of shapes) {
     for (const loop of shape) {
       for (let k = 0; k < loop.length; k++) {
@@ -130,6 +133,23 @@ export function polygonsOf(shapes: readonly Shape[], error: number): Loops {
     }
   }
   return out;
+}
+
+/** How many points the polygons have at most. */
+function chordCount(shapes: readonly Shape[], error: number): number {
+  let count = 0;
+  for (const shape of shapes) {
+    for (const loop of shape) {
+      for (let k = 0; k < loop.length; k++) {
+        const e = loop[k]!;
+        count += 1;
+        if (e.bulge === 0) continue;
+        const next = loop[k + 1 === loop.length ? 0 : k + 1]!;
+        count += chordsOf(curve(e.x, e.y, next.x, next.y, e.bulge), error) - 1;
+      }
+    }
+  }
+  return count;
 }
 
 /** The same for loops. */

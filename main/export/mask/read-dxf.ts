@@ -16,6 +16,8 @@ export function readDxf(bytes: Uint8Array): ReadMask {
 
 const LINE_FEED = 0x0a;
 const RETURN = 0x0d;
+/** Bytes of a point: two codes and two numbers on lines of their own. */
+const LEAST_POINT = 14;
 
 class Reader {
   unit = 0;
@@ -70,7 +72,7 @@ class Reader {
       if (code === 2 && this.kind === 'SECTION') this.#section = this.#text(from, to);
       else if (code === 70 && this.kind === 'SECTION') this.#variable();
       else if (code === 8 && this.kind === 'LWPOLYLINE' && this.#inChip())
-        this.#line = this.loops.of(this.#text(from, to));
+        this.#line = this.loops.of(this.#text(from, to), (bytes.length - to) / LEAST_POINT);
     }
   }
 
@@ -115,7 +117,7 @@ class Reader {
     } else if (this.kind === 'CIRCLE' && this.#inChip()) {
       const { unit } = this;
       const [x, y, r] = [this.#number(10) * unit, this.#number(20) * unit, this.#number(40) * unit] as const;
-      const loops = this.loops.of(this.#value(8));
+      const loops = this.loops.of(this.#value(8), 0);
       for (const e of circle(x, y, r)) loops.add(e.x, e.y, e.bulge);
       loops.close();
     } else if (this.kind === 'INSERT' && this.#inChip()) this.#insert();

@@ -57,7 +57,12 @@ export function readGdsii(bytes: Uint8Array): ReadMask {
         break;
       case RECORD.ENDEL:
         if (element === RECORD.BOUNDARY && structure === CHIP)
-          addBoundary(loops.of(`${layer}/${datatype}`), view, points, pointsEnd);
+          addBoundary(
+            loops.of(`${layer}/${datatype}`, (bytes.length - points) / POINT),
+            view,
+            points,
+            pointsEnd,
+          );
         else if (element === RECORD.SREF || element === RECORD.AREF) {
           const [x, y] = [view.getInt32(points), view.getInt32(points + 4)];
           const dx = element === RECORD.AREF ? (view.getInt32(points + 8) - x) / columns : 0;

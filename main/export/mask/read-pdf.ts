@@ -48,6 +48,8 @@ function plain(dictionary: string, body: Uint8Array): Buffer {
 const SPACE = 0x20;
 const LINE_FEED = 0x0a;
 const SLASH = 0x2f;
+/** Bytes of a point: two numbers and an operator, a space after each. */
+const LEAST_POINT = 6;
 /** Operators of one letter; the others are not of paths, but for the marks. */
 const MOVE = 0x6d;
 const LINE = 0x6c;
@@ -73,7 +75,10 @@ function readForm(bytes: Buffer, layers: LoopsByLayer): number {
     const end = at;
     at += 1;
     if (bytes[start] === SLASH)
-      loops = layers.of(bytes.toString('latin1', start + 1, bytes.indexOf(SPACE, start)));
+      loops = layers.of(
+        bytes.toString('latin1', start + 1, bytes.indexOf(SPACE, start)),
+        (bytes.length - at) / LEAST_POINT,
+      );
     if (end - word !== 1 || !loops) continue;
     const operator = bytes[word];
     if (count !== (operator === CURVE ? 6 : operator === MOVE || operator === LINE ? 2 : count))

@@ -21,7 +21,8 @@ export function readSvg(text: string): ReadMask {
       const [, , width, height] = get('viewBox').split(' ').map(Number);
       scaled = get('width') === `${width}mm` && get('height') === `${height}mm`;
     } else if (tag.name === 'path') {
-      addPath(loops.of(get('id')), Buffer.from(get('d'), 'latin1'));
+      const path = get('d');
+      addPath(loops.of(get('id'), path.length / LEAST_POINT), Buffer.from(path, 'latin1'));
     } else if (tag.name === 'use') shifts.push([Number(get('x')) * NM, 0 - Number(get('y')) * NM]);
   });
   parser.write(text).close();
@@ -34,6 +35,8 @@ const LINE = 0x4c;
 const ARC = 0x41;
 const CLOSE = 0x5a;
 const SPACE = 0x20;
+/** Bytes of a point: a letter and two numbers with a space between. */
+const LEAST_POINT = 4;
 
 /** Letters with the numbers that follow them, one space between two. */
 function addPath(loops: Loops, path: Uint8Array): void {

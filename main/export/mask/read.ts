@@ -15,10 +15,11 @@ export interface ReadMask {
 export class LoopsByLayer {
   readonly map = new Map<string, Loops>();
 
-  of(layer: string): Loops {
+  /** @param room points that are expected at most */
+  of(layer: string, room: number): Loops {
     let loops = this.map.get(layer);
     if (!loops) {
-      loops = new Loops();
+      loops = new Loops(Math.ceil(room) + 64);
       this.map.set(layer, loops);
     }
     return loops;

@@ -54,7 +54,11 @@ function pieceOf(paths: Paths64): Piece {
   return { paths, boxes, box: around(boxes), count: pointsOf(paths) };
 }
 
-const pointsOf = (paths: Paths64): number => paths.reduce((sum, path) => sum + path.length, 0);
+function pointsOf(paths: Paths64): number {
+  let sum = 0;
+  for (const path of paths) sum += path.length;
+  return sum;
+}
 
 function around(boxes: readonly Rect64[]): Rect64 {
   const all: Rect64 = { left: Infinity, top: Infinity, right: -Infinity, bottom: -Infinity };
@@ -72,18 +76,18 @@ function innerHole({ paths, boxes, box }: Piece): Rect64 | undefined {
   if (paths.length === 1) return undefined;
   let best: Rect64 | undefined;
   let least = Infinity;
-  paths.forEach((path, k) => {
+  for (let k = 0; k < paths.length; k++) {
     const own = boxes[k]!;
     const open =
       own.left <= box.left || own.right >= box.right || own.top <= box.top || own.bottom >= box.bottom;
-    if (open) return;
+    if (open) continue;
     const off =
       Math.abs(own.left + own.right - box.left - box.right) +
       Math.abs(own.top + own.bottom - box.top - box.bottom);
-    if (off >= least || area(path) >= 0) return;
+    if (off >= least || area(paths[k]!) >= 0) continue;
     least = off;
     best = own;
-  });
+  }
   return best;
 }
 
@@ -128,10 +132,11 @@ function ordered(paths: Paths64): Paths64[] {
 
 /** The two sides of a cut across the longer way: through the middle of the hole, else of its points. */
 function halves({ paths, boxes, box }: Piece, hole: Rect64 | undefined): Piece[] {
-  return sides(paths, box, hole).flatMap((side) => {
+  const out: Piece[] = [];
+  for (const side of sides(paths, box, hole)) {
     const kept: { paths: Paths64; boxes: Rect64[] } = { paths: [], boxes: [] };
     const cut: Paths64 = [];
-    paths.forEach((path, k) => {
+    for (let k = 0; k < paths.length; k++) {
       const own = boxes[k]!;
       if (
         own.right <= side.left ||
@@ -139,24 +144,24 @@ function halves({ paths, boxes, box }: Piece, hole: Rect64 | undefined): Piece[]
         own.bottom <= side.top ||
         own.top >= side.bottom
       )
-        return;
+        continue;
       if (
         own.left >= side.left &&
         own.right <= side.right &&
         own.top >= side.top &&
         own.bottom <= side.bottom
       ) {
-        kept.paths.push(path);
+        kept.paths.push(paths[k]!);
         kept.boxes.push(own);
-      } else cut.push(path);
-    });
+      } else cut.push(paths[k]!);
+    }
     for (const path of rectClip(side, cut)) {
       kept.paths.push(path);
       kept.boxes.push(getBounds(path));
     }
-    if (kept.paths.length === 0) return [];
-    return [{ ...kept, box: side, count: pointsOf(kept.paths) }];
-  });
+    if (kept.paths.length > 0) out.push({ ...kept, box: side, count: pointsOf(kept.paths) });
+  }
+  return out;
 }
 
 /** The two sides of a cut across the longer way of `box`. */
@@ -180,18 +185,19 @@ function sides(paths: Paths64, box: Rect64, hole?: Rect64): Rect64[] {
 const SAMPLE = 500;
 
 function cutAt(paths: Paths64, across: boolean): number {
-  const along = ({ x, y }: { x: number; y: number }): number => (across ? x : y);
   // of many points a sample tells the middle as well
   const stride = Math.ceil(pointsOf(paths) / SAMPLE);
-  const values: number[] = [];
+  const values = new Float64Array(SAMPLE);
+  let count = 0;
   let skip = 0;
   for (const path of paths) {
-    for (; skip < path.length; skip += stride) values.push(along(path[skip]!));
+    for (; skip < path.length; skip += stride) values[count++] = across ? path[skip]!.x : path[skip]!.y;
     skip -= path.length;
   }
-  values.sort((a, b) => a - b);
-  const middle = values[values.length >> 1]!;
+  const sorted = values.subarray(0, count).sort();
+  const middle = sorted[count >> 1]!;
   // a cut along a wall would leave a sliver: between the middle point and the next one
-  const next = values.find((value) => value > middle);
-  return next === undefined ? Math.round((values[0]! + middle) / 2) : Math.round((middle + next) / 2);
+  let next = (count >> 1) + 1;
+  while (next < count && sorted[next] === middle) next++;
+  return next < count ? Math.round((middle + sorted[next]!) / 2) : Math.round((sorted[0]! + middle) / 2);
 }
