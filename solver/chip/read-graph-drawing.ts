@@ -2,9 +2,10 @@ import Flatbush from 'flatbush';
 import type { Finding } from '../problem/finding.ts';
 import type { Channel, Chip } from './chip.ts';
 import { type Body, loopsOverlap, outline } from './geometry/body.ts';
+import { bodyBox } from './geometry/body-box.ts';
 import { addCentreline } from './geometry/centreline.ts';
 import { pointAt } from './geometry/curve.ts';
-import { CURVATURE, Elements, S0, S1, STRIDE } from './geometry/elements.ts';
+import { CURVATURE, Elements, H0, H1, S0, S1, STRIDE } from './geometry/elements.ts';
 import { apart, CORNERS, corners, elementBox } from './geometry/packed.ts';
 import { TOUCH } from './geometry/tolerance.ts';
 
@@ -24,6 +25,19 @@ const bodiesOf = new WeakMap<Channel, { readonly place: number; readonly bodies:
 const NONE: readonly number[] = [];
 const ascending = (a: number, b: number): number => a - b;
 
+/** Room round the box of an arc, nm, that neither rounding nor touching bridges. */
+const ROOM = 10;
+
+/** Whether two boxes of four numbers lie apart. */
+function clear(boxes: Float64Array, a: number, b: number): boolean {
+  return (
+    boxes[a]! > boxes[b + 2]! ||
+    boxes[b]! > boxes[a + 2]! ||
+    boxes[a + 1]! > boxes[b + 3]! ||
+    boxes[b + 1]! > boxes[a + 3]!
+  );
+}
+
 /** The channels of a chip in the plan, with an index over what their elements cover. */
 export class Drawing {
   readonly chip: Chip;
@@ -36,6 +50,7 @@ export class Drawing {
   readonly index: Flatbush | undefined;
   readonly #p = new Float64Array(CORNERS);
   readonly #q = new Float64Array(CORNERS);
+  readonly #close = new Float64Array(8);
   readonly #near: (readonly number[])[] = [];
 
   /** What the bends had to say. */
@@ -129,7 +144,21 @@ export class Drawing {
       const m = corners(this.elements, j, q);
       return !apart(p, n, q, m) && !apart(q, m, p, n);
     }
+    this.#closeBox(i, 0);
+    this.#closeBox(j, 4);
+    if (clear(this.#close, 0, 4)) return false;
     return loopsOverlap(outline(this.body(i)), outline(this.body(j)));
+  }
+
+  /** The box of an element, that of an arc by its own walls and not by its whole circle, into #close[at … at + 3]. */
+  #closeBox(id: number, at: number): void {
+    const d = this.elements.data;
+    const k = id * STRIDE;
+    if (d[k + CURVATURE] !== 0) {
+      bodyBox(this.elements.curve(id), Math.max(d[k + H0]!, d[k + H1]!), ROOM, this.#close, at);
+      return;
+    }
+    for (let side = 0; side < 4; side++) this.#close[at + side] = this.boxes[4 * id + side]!;
   }
 
   /** Number of the element of a channel at a distance along it. */

@@ -42,6 +42,9 @@ const apart = (a: Box, b: Box): boolean =>
 
 /** Whether a straight stretch meets a box: by its parts inside each side (Liang and Barsky). */
 function crosses([x0, y0]: At, [x1, y1]: At, box: Box): boolean {
+  // most are all on one side
+  if ((x0 < box.left && x1 < box.left) || (x0 > box.right && x1 > box.right)) return false;
+  if ((y0 < box.top && y1 < box.top) || (y0 > box.bottom && y1 > box.bottom)) return false;
   let from = 0;
   let to = 1;
   for (const [p, q] of [
