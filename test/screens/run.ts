@@ -134,6 +134,16 @@ const STATES: Readonly<Record<string, (page: Page) => Promise<void>>> = {
     await page.mouse.click(box.x + 600, box.y + 220);
     await answered(page);
   },
+  'four-way': async (page) => {
+    await empty(page);
+    await press(page, 't');
+    await page.keyboard.type('12 mm, 4 mm');
+    await page.keyboard.press('Enter');
+    await page.keyboard.type('50 mm, 22 mm');
+    await page.keyboard.press('Enter');
+    await answered(page);
+    await press(page, 'Escape');
+  },
   several: async (page) => {
     await solved(page, /Eight-way/);
     await press(page, 'Control+a');
