@@ -268,7 +268,7 @@ for (const [state, go] of Object.entries(STATES)) {
       });
       // the page has taken the colours when it says so
       await sitting.page.waitForFunction(
-        (wanted) => getComputedStyle(document.documentElement).colorScheme === wanted,
+        (wanted) => document.documentElement.style.colorScheme === wanted,
         look.scheme,
       );
       await sitting.page.waitForTimeout(400);
