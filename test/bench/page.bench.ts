@@ -201,6 +201,8 @@ async function dragging(folder: string): Promise<BenchRow[]> {
     await page.mouse.click(at.x - 60, at.y);
     await page.mouse.move(at.x, at.y);
     await page.mouse.down();
+    // held off the grid: the junction stays under the pointer and takes a new shape with every step
+    await page.keyboard.down('Alt');
     let x = 0;
     const script = await perFrame(sitting, async () => {
       for (; x < 90; x += 1) {
@@ -263,7 +265,7 @@ async function dragging(folder: string): Promise<BenchRow[]> {
               setTimeout(() => done(Number.NaN), 5000);
             }),
         );
-        // beyond the steps of the grid
+        // far enough for another shape
         x += 24;
         await page.mouse.move(at.x + x, at.y + x / 3, { steps: 4 });
         if (rest > 0) await page.waitForTimeout(rest);
@@ -273,9 +275,13 @@ async function dragging(folder: string): Promise<BenchRow[]> {
       }
     }
     await page.mouse.up();
+    await page.keyboard.up('Alt');
     const [followed, settled, afterRest] = [follow, settle, rested].map((values) =>
       values.filter(Number.isFinite),
     ) as [number[], number[], number[]];
+    // what never came is no fast answer
+    if (followed.length < follow.length || settled.length < settle.length || afterRest.length < rested.length)
+      throw new Error('A dragged junction was not answered within the time that is waited for.');
     return [
       {
         what: 'junction of four arms dragged: script per frame',
