@@ -8,10 +8,10 @@ import { lattice } from './mask-lattice.ts';
 import type { BenchRow } from './row.ts';
 
 /** Processes of which the first mask is taken. */
-const FIRSTS = 5;
-const RUNS = 9;
+const FIRSTS = 3;
+const RUNS = 7;
 /** The first of these are left to the runtime to compile what they take. */
-const WARM = 4;
+const WARM = 3;
 
 async function told(format: MaskFormat, count: number, bends: boolean, runs: number): Promise<Times[]> {
   const script = join(import.meta.dirname, 'mask-process.ts');
