@@ -1,8 +1,19 @@
-import type { Accuracy } from '../../solver/cell/cell.ts';
+import type { Accuracy, ShapeSolution } from '../../solver/cell/cell.ts';
 import type { CellSpec } from '../../solver/cell/cut/spec.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import type { CellNews, CellOrder } from './messages.ts';
-import type { CellHand, Found } from './thread.ts';
+
+/** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
+export interface CellHand {
+  /** @param ahead nobody waits for them yet: they must not keep those waiting who do */
+  solve(cells: readonly CellSpec[], accuracy: Accuracy, ahead?: boolean): void;
+  /** `left` is how many of the newest list are still to come. */
+  listen(listener: (cell: CellSpec, accuracy: Accuracy, found: Found, left: number) => void): void;
+  /** Work is left lying for so many ms, after the step that is being done; 0 takes it up again. */
+  hold(ms: number): void;
+}
+
+export type Found = { readonly key: string; readonly solution: ShapeSolution } | Problem;
 
 /** Threads beside the solving thread and the page's own. */
 const THREADS = Math.max(1, Math.min(4, navigator.hardwareConcurrency - 1));

@@ -8,8 +8,9 @@ import { solve } from '../../solver/solve.ts';
 import { teeChip } from '../testing/chips.ts';
 import { verdicts } from '../verdict/verdicts.ts';
 import type { AtHand } from './at-hand.ts';
+import type { CellHand } from './cell-hand.ts';
 import type { News } from './messages.ts';
-import { type CellHand, solvingThread } from './thread.ts';
+import { solvingThread } from './thread.ts';
 
 /**
  * The thread with a hand that finds nothing, or what there is to be found; each step of both, and of the

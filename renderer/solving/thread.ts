@@ -1,8 +1,7 @@
-import { type Accuracy, PREVIEW_ACCURACY, type ShapeSolution } from '../../solver/cell/cell.ts';
+import { PREVIEW_ACCURACY } from '../../solver/cell/cell.ts';
 import type { CellSpec } from '../../solver/cell/cut/spec.ts';
 import { decodeSolution, encodeSolution } from '../../solver/cell/encode.ts';
 import { cellPicture } from '../../solver/cell/picture.ts';
-import { cellKey } from '../../solver/cell/solve-cell.ts';
 import { memoryStore } from '../../solver/cell/store.ts';
 import type { Chip } from '../../solver/chip/chip.ts';
 import { applyEdit, type ChipEdit } from '../../solver/chip/edit.ts';
@@ -21,20 +20,14 @@ import {
 import { verdicts } from '../verdict/verdicts.ts';
 import { showIn } from '../words/figure.ts';
 import { atHand } from './at-hand.ts';
+import type { CellHand } from './cell-hand.ts';
 import { exercising } from './exercise.ts';
 import { keeping } from './keep.ts';
 import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
+import { refused } from './refusal.ts';
 import { shownGraph } from './shown-graph.ts';
+import { keysOf, seenFirst } from './waiting.ts';
 
-/** Where junctions are solved beside the solving thread. A new list takes the place of the one before. */
-export interface CellHand {
-  /** @param ahead nobody waits for them yet: they must not keep those waiting who do */
-  solve(cells: readonly CellSpec[], accuracy: Accuracy, ahead?: boolean): void;
-  /** `left` is how many of the newest list are still to come. */
-  listen(listener: (cell: CellSpec, accuracy: Accuracy, found: Found, left: number) => void): void;
-  /** Work is left lying for so many ms, after the step that is being done; 0 takes it up again. */
-  hold(ms: number): void;
-}
 /** An answer is given anew for a junction that came only after this many times as long as one takes. */
 const PATIENCE = 3;
 /** ms that the hand rests before what it holds is solved as it would be once let go. */
@@ -46,8 +39,6 @@ const MOST_AWAITED = 2;
 const HELD = 150;
 /** Bytes of solved junctions held beside those in use; the project keeps the others. */
 const MOST_KEPT = 96e6;
-/** Keys asked for at once, within what a request may carry. */
-const MOST_WANTED = 256;
 
 /** An answer, and what it was made of. */
 interface Fresh {
@@ -57,8 +48,6 @@ interface Fresh {
   readonly waiting: readonly CellSpec[];
   readonly began: number;
 }
-
-export type Found = { readonly key: string; readonly solution: ShapeSolution } | Problem;
 
 /**
  * The solving thread's behaviour, without a thread: orders in, news out. Edits that arrive while one is
@@ -146,15 +135,6 @@ export function solvingThread(
     }
   };
 
-  /** What is on screen before what is not, each in drawing order. */
-  const seenFirst = (waiting: readonly CellSpec[]): readonly CellSpec[] => {
-    if (!look) return waiting;
-    const { left, right, bottom, top } = look;
-    const seen = ({ origin: [x, y] }: CellSpec): boolean =>
-      x >= left && x <= right && y >= bottom && y <= top;
-    return [...waiting.filter(seen), ...waiting.filter((cell) => !seen(cell))];
-  };
-
   /**
    * The project is asked for what it kept, once for each junction. Of a chip that was just opened nothing is
    * solved before it has answered; after an edit it rarely has what is new, and is not waited for.
@@ -168,7 +148,7 @@ export function solvingThread(
       tell({ kind: 'want', keys: fresh });
     }
     // Anew each time: one that came may have been a copy of others.
-    if (open === 0 || edited) hand.solve(seenFirst(waiting), accuracyOf(options));
+    if (open === 0 || edited) hand.solve(seenFirst(waiting, look), accuracyOf(options));
   };
 
   /** Solves a chip in haste; with what its junctions still wait for. */
@@ -253,7 +233,7 @@ export function solvingThread(
     beforehand(which, (cells) => {
       const lacking = lackingCells(cells, accuracy, memory.cells);
       count = lacking.length;
-      if (ahead || count > 0) hand.solve(seenFirst(lacking), accuracy, ahead);
+      if (ahead || count > 0) hand.solve(seenFirst(lacking, look), accuracy, ahead);
     });
     return count;
   };
@@ -418,25 +398,3 @@ export function solvingThread(
 
 const sameChanges = (a: ChipEdit, b: ChipEdit): boolean =>
   JSON.stringify(a.changes) === JSON.stringify(b.changes);
-
-/** Keys of the shapes, each once; a shape that cannot be solved has none. */
-function keysOf(cells: readonly CellSpec[]): string[] {
-  const keys = new Set<string>();
-  for (const { shape, name } of cells) {
-    try {
-      keys.add(cellKey(shape, name));
-    } catch {
-      // the solve itself says why
-    }
-  }
-  return [...keys].slice(0, MOST_WANTED);
-}
-
-function refused(error: unknown): Refused {
-  if (error instanceof Problem) return { what: error.what, where: error.where, remedy: error.remedy };
-  return {
-    what: 'The solver stopped at something it was not made for.',
-    where: '',
-    remedy: 'Undo the last change; the chip itself is kept.',
-  };
-}
