@@ -1,4 +1,5 @@
 import { expect, test } from 'vitest';
+import { readGraph } from '../../solver/chip/read-graph.ts';
 import { metres } from '../../solver/chip/units.ts';
 import { chipOf, dxf, outline } from './read.ts';
 
@@ -256,6 +257,75 @@ test('a step of the width parts two channels', () => {
     ),
   ]);
 });
+
+/** Half a width aside; flush on one side of a wider one; overlapping there; beside an arc. */
+const STEPS: Readonly<Record<string, number[][][]>> = {
+  aside: [
+    [
+      [1000, 1000],
+      [6000, 1000],
+      [6000, 1050],
+      [9000, 1050],
+      [9000, 1150],
+      [6000, 1150],
+      [6000, 1100],
+      [1000, 1100],
+    ],
+  ],
+  flush: [
+    [
+      [1000, 1000],
+      [6000, 1000],
+      [6000, 900],
+      [9000, 900],
+      [9000, 1100],
+      [1000, 1100],
+    ],
+  ],
+  overlapping: [
+    [
+      [1000, 1000],
+      [6000, 1000],
+      [6000, 1100],
+      [1000, 1100],
+    ],
+    [
+      [5980, 1080],
+      [9000, 1080],
+      [9000, 1180],
+      [5980, 1180],
+    ],
+  ],
+  arc: [
+    [
+      [1000, 1000],
+      [6000, 1000],
+      [6000, 1100],
+      [1000, 1100],
+    ],
+    // A quarter turn from the right to upward, its radii 950 and 1050 about (6000, 2000).
+    [
+      [6000, 950, Math.tan(Math.PI / 8)],
+      [7050, 2000],
+      [6950, 2000, -Math.tan(Math.PI / 8)],
+      [6000, 1050],
+    ],
+  ],
+};
+
+test.each(Object.entries(STEPS))(
+  'channels that go on a little to the side (%s) are channels still, with a room between',
+  (_, outlines) => {
+    const { chip, channels, deviation } = channelsOf(outlines);
+    expect(channels).toHaveLength(2);
+    expect(chip.chambers).toHaveLength(1);
+    expect(deviation.furthest).toBeLessThan(0.1e-6);
+    // nearly all of it is channel, and all of it one cavity
+    const length = channels.reduce((sum, { path: [[ax], [bx]] }) => sum + Math.abs(bx! - ax!), 0);
+    expect(length).toBeGreaterThan(5500);
+    expect(new Set(readGraph(chip).cavity).size).toBe(1);
+  },
+);
 
 test('a tee: the straight one goes through, the other ends on it', () => {
   const { channels, deviation } = channelsOf([

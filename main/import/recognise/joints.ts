@@ -12,6 +12,8 @@ const OFFSET = 0.02;
 const FURTHEST = 4;
 /** A knot larger than this many squares of the widest width is a chamber. */
 const LARGEST = 5.5;
+/** A step to the side between two channels is a chamber that reaches so many widths into either. */
+const STEP = 0.5;
 /** Share of its width by which a channel is led into a chamber. */
 const INTO = 0.5;
 
@@ -168,6 +170,11 @@ function joinTwo(a: Arm, b: Arm, widest: number): void {
     meetAt(a, b, arc.end.x, arc.end.y);
     return;
   }
+  if (Math.abs(sine) < 0.02 && besides(a, b)) {
+    if (Math.min(a.length, b.length) < 2 * STEP * widest) return;
+    for (const arm of [a, b]) if (arm.straight) drawBack(arm, STEP * widest);
+    return;
+  }
   if (Math.abs(sine) < 0.02 || gap <= 2) {
     meetAt(a, b, (p.x + q.x) / 2, (p.y + q.y) / 2);
     return;
@@ -180,6 +187,20 @@ function joinTwo(a: Arm, b: Arm, widest: number): void {
     return;
   }
   meetAt(a, b, x, y);
+}
+
+/** Whether two ends look at each other past each other: their channels meet in a step to the side. */
+function besides({ end: p, straight }: Arm, { end: q, straight: other }: Arm): boolean {
+  if (!(straight || other) || p.ux * q.ux + p.uy * q.uy > -0.9) return false;
+  const off = Math.abs((q.x - p.x) * p.uy - (q.y - p.y) * p.ux);
+  return off > OFFSET * Math.min(p.width, q.width) + 3;
+}
+
+/** Leaves the ground before an end to a chamber, which the end then leads into. */
+function drawBack(arm: Arm, by: number): void {
+  const { x, y, ux, uy } = arm.end;
+  settle(arm, x - by * ux, y - by * uy);
+  arm.place.into = by / 2;
 }
 
 function meetAt(a: Arm, b: Arm, x: number, y: number): void {
