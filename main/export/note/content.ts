@@ -16,8 +16,9 @@ import {
   unbroken,
 } from './blocks.ts';
 import { type Paper, planPicture, size } from './drawing.ts';
+import { channelsSection, channelsTable, portsTable } from './drawn.ts';
 import { driftTable, drivesTable, startWords } from './drives.ts';
-import { channelsSection, channelsTable, layersTable, portsTable, processBlocks } from './making.ts';
+import { layersTable, processBlocks } from './making.ts';
 import { measuredSection } from './measured.ts';
 import type { Picture } from './picture.ts';
 import { routesSection } from './routes.ts';
