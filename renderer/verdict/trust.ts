@@ -26,6 +26,27 @@ export function highestReynolds(result: Result): { readonly value: number; reado
   return best;
 }
 
+/** Names of what is solved in space, as they are told: a via joins channels, a port's hole ends them. */
+const PLACES = [
+  ['junction', ['junction', 'via']],
+  ['chamber', ['chamber']],
+  ['bend', ['bend']],
+  ['step', ['step']],
+  ['hole', ['port']],
+] as const;
+
+/** "one junction", "14 junctions, bends and holes": what was solved in space; "" where nothing was. */
+function solvedPlaces({ cells }: Result): string {
+  const solved = cells.filter(({ accuracy }) => accuracy < 1);
+  const met = new Set(solved.map(({ kind }) => kind));
+  const names = PLACES.flatMap(([name, kinds]) => (kinds.some((kind) => met.has(kind)) ? [name] : []));
+  const [first = 'junction', ...others] = names;
+  if (solved.length === 0) return '';
+  const last = others.pop();
+  const listed = [counted(solved.length, first), ...others.map((name) => `${name}s`)].join(', ');
+  return last === undefined ? listed : `${listed} and ${last}s`;
+}
+
 /** The stated error, what is still taken as ideal, and the Reynolds number that creeping flow rests on. */
 export function trustAnswer(evidence: Evidence): Answer {
   const { result, chip } = evidence;
@@ -41,7 +62,7 @@ export function trustAnswer(evidence: Evidence): Answer {
     ? `Re at most ${number(reynolds.value, reynolds.value < 0.1 ? 1 : 2)}.`
     : 'nothing flows.';
   const culprit = doubts[0] ? placeRef(doubts[0].where, chip) : reynolds && placeRef(reynolds.where, chip);
-  const solved = result.cells.filter((cell) => cell.accuracy < 1).length;
+  const solved = solvedPlaces(result);
   const { waiting = 0, preview = false } = evidence;
   if (preview)
     return {
@@ -90,7 +111,7 @@ export function trustAnswer(evidence: Evidence): Answer {
           ? 'Roughly: junctions are taken as ideal'
           : 'Nearly: some junctions are still ideal',
         ...(bands ? [', splits may be off by ', strong(percent(bands.share))] : []),
-        solved > 0 ? `, ${counted(solved, 'junction')} solved; ` : '; ',
+        solved ? `, ${solved} solved; ` : '; ',
         flow,
       ],
       margin: null,
@@ -108,7 +129,7 @@ export function trustAnswer(evidence: Evidence): Answer {
             strong(percent(error)),
             bands ? `, wall shear within ${percent(bands.shear)}` : '',
           ]),
-      solved > 0 ? `: ${counted(solved, 'junction')} solved, ` : ': ',
+      solved ? `: ${solved} solved, ` : ': ',
       flow,
     ],
     margin: band(bands && error === 0 ? bands.shear : error),

@@ -292,6 +292,22 @@ describe('Can I trust it?', () => {
     expect(answer).toMatchObject({ standing: 'yes', margin: { kind: 'band' } });
     expect(text(answer)).toBe('Within 0.40 %: one junction solved, Re at most 1.2.');
   });
+  test('what is solved is told by its kinds, as the ledger and the sheet name them', () => {
+    const of = (...kinds: readonly string[]): string =>
+      text(
+        ask(
+          'trust',
+          teeChip(),
+          resultOf({ cells: kinds.map((kind, i) => ({ ...cell, id: `${kind}:${i}`, kind })) }),
+        ),
+      );
+    expect(of('port', 'port')).toContain(': two holes solved, ');
+    expect(of('port', 'bend', 'junction', 'via', 'port')).toContain(
+      ': five junctions, bends and holes solved, ',
+    );
+    expect(of('chamber', 'step')).toContain(': two chambers and steps solved, ');
+    expect(of()).not.toContain('solved');
+  });
   test('ideal junctions are said', () => {
     const answer = ask('trust', teeChip(), resultOf({ junctions: 'ideal' }));
     expect(answer.standing).toBe('unknown');
