@@ -39,7 +39,7 @@ export function madeAnswer({ chip, result }: Evidence): Answer {
       standing: stops.some((finding) => finding.severity === 'stop') ? 'no' : 'unknown',
       says: [
         first.severity === 'stop' ? 'No: ' : 'Doubtful: ',
-        spoken(first.says).replace(/\.$/, ''),
+        goneOn(spoken(first.says)).replace(/\.$/, ''),
         stops.length > 1 ? `, and ${counted(stops.length - 1, 'more finding', 'more findings')}.` : '.',
       ],
       margin: null,
@@ -69,3 +69,7 @@ export function madeAnswer({ chip, result }: Evidence): Answer {
     culprit: `channel:${least.id}`,
   };
 }
+
+/** A sentence as it goes on after a colon: names keep how they are written, articles do not. */
+const goneOn = (sentence: string): string =>
+  sentence.replace(/^(The|An?|In|At|Between)(?= )/, (word) => word.toLowerCase());

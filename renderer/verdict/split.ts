@@ -74,7 +74,7 @@ export function splitAnswer(evidence: Evidence): Answer {
     return answer('yes', made, [
       targets.length === 1 ? `Yes: ${nameOf(worst)} is within ` : `${all} ${noun(targets)} within `,
       off,
-      `${plusMinus(worst.band)}; making adds ± `,
+      `${plusMinus(worst.band)}; making adds ±\u00a0`,
       strong(percent(made.making!.likely)),
       reach(made) > within(made) ? `, ${percent(within(made))} is allowed.` : '.',
     ]);

@@ -267,6 +267,10 @@ describe('Can it be made?', () => {
     const no = ask('made', chip, resultOf({ findings: [doubt, stop] }));
     expect(no).toMatchObject({ standing: 'no', culprit: 'channel:up' });
     expect(text(no)).toBe('No: up is thin, and one more finding.');
+    const wall = { ...stop, says: 'The wall between up and In is thin.' };
+    expect(text(ask('made', chip, resultOf({ findings: [wall] })))).toBe(
+      'No: the wall between up and In is thin.',
+    );
     const held = { ...stop, accepted: 'made before' };
     expect(ask('made', chip, resultOf({ findings: [held, doubt] })).standing).toBe('unknown');
     const yes = ask('made', chip, resultOf({ findings: [held] }));
