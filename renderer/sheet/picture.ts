@@ -135,7 +135,18 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
           const [x, y] = toScreen(camera, size, port.at);
           room.fill(x - 6, y - 6, 12, 12);
         }
-        drawPlaceWords(ctx, d.places, camera, size, look, room, edge, d.spatial);
+        // what a finding says of something in the hand stands at the pointer
+        drawPlaceWords(
+          ctx,
+          d.places,
+          camera,
+          size,
+          look,
+          room,
+          edge,
+          d.spatial,
+          (entry) => !d.live || entry.alarm,
+        );
         drawPortWords(ctx, d.ports, camera, size, look, room, edge, d.spatial);
         drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, d.spatial);
         drawScaleBar(ctx, camera, size, look);

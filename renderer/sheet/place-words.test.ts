@@ -53,6 +53,7 @@ function set(
   places: readonly (readonly [number, number])[],
   size: { width: number; height: number },
   chambers: Chip['chambers'] | null = null,
+  worded?: (entry: PlaceWords) => boolean,
 ) {
   const drawn = teeChip();
   const chip: Chip = {
@@ -71,7 +72,7 @@ function set(
     alarm: i === 0,
     where: '',
   }));
-  drawPlaceWords(ctx, words, camera, size, PALETTES.light, new Room(), edge, new Spatial(chip));
+  drawPlaceWords(ctx, words, camera, size, PALETTES.light, new Room(), edge, new Spatial(chip), worded);
   return { lines, rings: rings(), chip, camera, edge };
 }
 
@@ -97,6 +98,17 @@ test('long words of findings stay in the sheet, off the graduated edge and off t
         }
         expect(lines.map(({ text }) => text).join(' '), where).toBe(`0. ${LONG} ${DO}`);
       }
+});
+
+test('of what is in the hand only limits speak on the sheet; what else is found keeps its ring', () => {
+  const size = SIZES[0]!;
+  const places = [
+    [20, 13],
+    [50, 13],
+  ] as const;
+  const { lines, rings } = set(places, size, null, ({ alarm }) => alarm);
+  expect(lines.map(({ text }) => text).join(' ')).toBe(`0. ${LONG} ${DO}`);
+  expect(rings).toEqual(set(places, size).rings);
 });
 
 test('words of several findings keep off one another', () => {

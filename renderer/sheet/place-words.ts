@@ -50,7 +50,10 @@ interface Box {
   readonly laid: Laid;
 }
 
-/** A ring round each place and the words beside it, in the drawing's own area: off its edge and off one another. */
+/**
+ * A ring round each place and, where it is `worded`, the words beside it, in the drawing's own area: off its edge and
+ * off one another.
+ */
 export function drawPlaceWords(
   ctx: CanvasRenderingContext2D,
   words: readonly PlaceWords[],
@@ -60,6 +63,7 @@ export function drawPlaceWords(
   room: Room,
   edge: Room,
   spatial: Spatial,
+  worded: (entry: PlaceWords) => boolean = () => true,
 ): void {
   const covered = coverage(camera, size, spatial);
   const chip = chipOnScreen(spatial.chip.outline, camera, size);
@@ -84,6 +88,7 @@ export function drawPlaceWords(
       ctx.arc(at[0], at[1], RING, 0, 2 * Math.PI);
       ctx.stroke();
     }
+    if (!worded(entry)) continue;
     const place = roomBeside(ring, waysToSet(ctx, entry), inner, size, room, edge, covered);
     if (!place) continue;
     const { left, top, right, laid } = place;
