@@ -3,6 +3,7 @@ import { app, session } from 'electron';
 import { createSessions } from '../session/sessions.ts';
 import { userDataFolder } from '../user/folder.ts';
 import { chooseFile } from './choose.ts';
+import { ENGINE } from './engine.ts';
 import { takeRequests } from './ipc.ts';
 import { setMenu } from './menu.ts';
 import { declareScheme, serveScheme } from './scheme.ts';
@@ -25,6 +26,7 @@ function start(): void {
   app.setName('Channelwright');
   app.setAppUserModelId('org.channelwright.app');
   app.enableSandbox();
+  app.commandLine.appendSwitch('js-flags', ENGINE);
   declareScheme();
   closeContents();
 

@@ -11,6 +11,8 @@ export interface Noted {
   first: boolean;
   quits: number;
   sandboxed: boolean;
+  /** Switches of the browser that were set before it started. */
+  switches: string[];
   schemes: { scheme: string; privileges: Record<string, boolean> }[];
   handlers: Map<string, (event: unknown, ...args: unknown[]) => Promise<unknown>>;
   served: Map<string, (request: Request) => Promise<Response>>;
@@ -80,6 +82,7 @@ export const noted: Noted = {
   first: true,
   quits: 0,
   sandboxed: false,
+  switches: [],
   schemes: [],
   handlers: new Map(),
   served: new Map(),
@@ -95,8 +98,12 @@ export const noted: Noted = {
 
 class DoubleApp extends EventEmitter {
   ready!: () => void;
+  #started = false;
   readonly #ready = new Promise<void>((done) => {
-    this.ready = done;
+    this.ready = () => {
+      this.#started = true;
+      done();
+    };
   });
   whenReady = (): Promise<void> => this.#ready;
   getAppPath = (): string => noted.appPath;
@@ -106,6 +113,12 @@ class DoubleApp extends EventEmitter {
   setAppUserModelId = (): void => undefined;
   enableSandbox = (): void => {
     noted.sandboxed = true;
+  };
+  commandLine = {
+    appendSwitch: (name: string, value = ''): void => {
+      // Chromium reads its switches when it starts
+      if (!this.#started) noted.switches.push(`--${name}=${value}`);
+    },
   };
   requestSingleInstanceLock = (): boolean => noted.first;
   addRecentDocument = (path: string): void => {

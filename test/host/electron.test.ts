@@ -5,6 +5,7 @@ import { afterEach, expect, test, vi } from 'vitest';
 import { makeFile } from '../../db/make.ts';
 import type { Reply } from '../../main/contract/contract.ts';
 import { decode, encode } from '../../main/contract/wire.ts';
+import { ENGINE } from '../../main/electron/engine.ts';
 import { madeUpChip, random, randomEdit } from '../faults/random.ts';
 import { inFolder } from '../faults/sample.ts';
 import type * as Double from './electron-double.ts';
@@ -82,6 +83,7 @@ const good = (reply: Reply): unknown => {
 test('a window is closed to everything but the page', async () => {
   await withDesktop(async ({ noted, window, electron }) => {
     expect(noted.sandboxed).toBe(true);
+    expect(noted.switches).toEqual([`--js-flags=${ENGINE}`]);
     const { webPreferences, minWidth } = window().options as { webPreferences: object; minWidth: number };
     expect(webPreferences).toMatchObject({
       contextIsolation: true,

@@ -1,5 +1,6 @@
 import { existsSync } from 'node:fs';
 import { type Browser, chromium } from 'playwright-core';
+import { ENGINE } from '../../main/electron/engine.ts';
 
 const INSTALLED = [
   '/usr/bin/chromium',
@@ -47,6 +48,8 @@ export async function launch(): Promise<Browser> {
       '--disable-component-update',
       '--disable-sync',
       '--force-color-profile=srgb',
+      // as the desktop build starts it
+      `--js-flags=${ENGINE}`,
     ],
   });
 }
