@@ -1,4 +1,4 @@
-import { expect, test } from 'vitest';
+import { expect, test, vi } from 'vitest';
 import type { Client } from '../../main/contract/client.ts';
 import type { ProjectState } from '../../main/contract/contract.ts';
 import { createSolver } from '../solving/solver.ts';
@@ -9,8 +9,12 @@ import { wouldBe } from './live.ts';
 import { createWorkbench } from './workbench.ts';
 
 /** A desk with a host that keeps everything at once, and the solver in the same thread, on demand. */
-async function openDesk(mode: ProjectState['mode'] = 'draft') {
+async function openDesk(
+  mode: ProjectState['mode'] = 'draft',
+  reply: (answer: () => void) => void = (answer) => answer(),
+) {
   const asked: string[] = [];
+  const done: string[] = [];
   let seq = 1;
   const state = {
     chip: teeChip(),
@@ -24,10 +28,13 @@ async function openDesk(mode: ProjectState['mode'] = 'draft') {
     seq,
   } as unknown as ProjectState;
   const client = {
-    call: async (method: string) => {
+    call: (method: string, input: { readonly edit?: { readonly label: string } }) => {
       asked.push(method);
       seq += 1;
-      return { seq, undo: null, redo: null, state };
+      if (input.edit) done.push(input.edit.label);
+      else if (method === 'project.undo') done.pop();
+      const position = { seq, undo: done.at(-1) ?? null, redo: null, state };
+      return new Promise((resolve) => reply(() => resolve(position)));
     },
     on: () => () => undefined,
   } as unknown as Client;
@@ -76,6 +83,28 @@ test('edits are named, undone and done again, and the host is told each', async 
   await desk.settled();
   expect(asked).toEqual(['project.edit', 'project.edit', 'project.undo', 'project.undo', 'project.redo']);
   expect(desk.project.get()!.keeping).toBe(false);
+});
+
+test('while more is on its way to the host, what it could take back now is not offered', async () => {
+  const answers: (() => void)[] = [];
+  const { desk } = await openDesk('draft', (answer) => answers.push(answer));
+  const offered: (string | null)[] = [];
+  desk.alter(widened(250_000));
+  desk.alter(widened(300_000));
+  desk.undo();
+  desk.undo();
+  for (let last = false; !last; ) {
+    await vi.waitFor(() => expect(answers).toHaveLength(1));
+    answers.shift()!();
+    last = await vi.waitFor(() => {
+      expect(desk.position()).toBe(2 + offered.length);
+      return !desk.project.get()!.keeping;
+    });
+    offered.push(desk.undoLabel());
+  }
+  // the host has the earlier of both widths to take back after every deed but the last
+  expect(offered).toEqual([null, null, null, null]);
+  expect(desk.redoLabel()).toBe('widen feed to 250000');
 });
 
 test('an edit that makes no chip changes nothing and says why', async () => {

@@ -92,13 +92,15 @@ export function createDesk(
   const keeper = new Keeper(client, {
     kept: (position) => {
       const open = project.get();
+      const keeping = keeper.busy;
+      // while more is on its way, what the host could take back now is not what it will be then
       if (open)
         project.set({
           ...open,
           keptAt: Date.now(),
-          keeping: keeper.busy,
-          ...(open.document.done.length === 0 && { hostUndo: position.undo }),
-          ...(open.document.undone.length === 0 && { hostRedo: position.redo }),
+          keeping,
+          ...(!keeping && open.document.done.length === 0 && { hostUndo: position.undo }),
+          ...(!keeping && open.document.undone.length === 0 && { hostRedo: position.redo }),
         });
     },
     refused: (problem) => {

@@ -69,6 +69,30 @@ export async function answered(page: Page): Promise<void> {
   await page.locator('.verdicts[aria-busy="false"]').waitFor({ timeout: 120_000 });
 }
 
+const NOTHING = 'nothing copied yet';
+
+/**
+ * What `act` puts into the clipboard. A browser says that something is written before it can be read, so what
+ * is read back is waited for.
+ */
+export async function copied(page: Page, act: () => Promise<unknown>): Promise<string> {
+  await page.evaluate((text) => navigator.clipboard.writeText(text), NOTHING);
+  await page.waitForFunction(async (text) => (await navigator.clipboard.readText()) === text, NOTHING);
+  await act();
+  const text = await page.waitForFunction(async (nothing) => {
+    const now = await navigator.clipboard.readText();
+    return now !== nothing && now !== '' && now;
+  }, NOTHING);
+  return (await text.jsonValue()) || '';
+}
+
+/** The whole chip's description, by way of the clipboard; the sheet has the focus then and all parts are chosen. */
+export async function description(page: Page): Promise<string> {
+  await page.locator('.sheet-surface').first().focus();
+  await page.keyboard.press('Control+a');
+  return copied(page, () => page.keyboard.press('Control+c'));
+}
+
 /** Where a place of the chip (mm from its lower left) lies on the page, while the whole chip is shown. */
 export async function placeOnPage(
   page: Page,

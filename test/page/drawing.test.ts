@@ -1,6 +1,6 @@
 import type { Page } from 'playwright-core';
 import { expect, test, vi } from 'vitest';
-import { answered, placeOnPage, sit } from './desk.ts';
+import { answered, description, placeOnPage, sit } from './desk.ts';
 
 /** Drawing, making and finding again on the real page: what the tools' own tests cannot see. */
 
@@ -14,13 +14,7 @@ interface Described {
 
 /** The chip as it is copied. */
 async function described(page: Page): Promise<Described> {
-  await sheet(page).focus();
-  await page.evaluate(() => navigator.clipboard.writeText(''));
-  await page.keyboard.press('Control+a');
-  await page.keyboard.press('Control+c');
-  const text = await vi.waitUntil(() => page.evaluate(() => navigator.clipboard.readText()), {
-    timeout: 30_000,
-  });
+  const text = await description(page);
   await page.keyboard.press('Escape');
   return JSON.parse(text) as Described;
 }

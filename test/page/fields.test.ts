@@ -4,7 +4,7 @@ import { join } from 'node:path';
 import type { Page } from 'playwright-core';
 import { expect, test, vi } from 'vitest';
 import { dxf, outline } from '../import/read.ts';
-import { answered, placeOnPage, sit } from './desk.ts';
+import { answered, description, placeOnPage, sit } from './desk.ts';
 import { EVERYTHING } from './everything.ts';
 
 /**
@@ -112,12 +112,7 @@ test('nonsense in every field: kept, explained, never applied, never lost', asyn
 
 /** The chip as the page holds it: its description by way of the clipboard, and what could be undone. */
 async function chipNow(page: Page): Promise<string> {
-  await page.locator('.sheet-surface').first().focus();
-  await page.keyboard.press('Control+a');
-  await page.evaluate(() => navigator.clipboard.writeText(''));
-  await page.keyboard.press('Control+c');
-  await page.waitForFunction(async () => (await navigator.clipboard.readText()).length > 0);
-  const text = await page.evaluate(() => navigator.clipboard.readText());
+  const text = await description(page);
   return `${text} ${await page.locator('.header-verbs button').first().getAttribute('title')}`;
 }
 

@@ -3,7 +3,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { expect, test } from 'vitest';
 import { readDescription } from '../../solver/chip/description.ts';
-import { answered, placeOnPage, sit } from './desk.ts';
+import { answered, description, placeOnPage, sit } from './desk.ts';
 
 /**
  * Keep-outs by mouse and by keyboard: drawn, found in the way, moved out of it, taken away and brought back;
@@ -67,15 +67,7 @@ test('keep-outs drawn, found, moved, taken away and brought back; bands beside f
   const verdicts = page.locator('.verdicts');
   const card = page.locator('.card');
   /** The chip as the page has it. */
-  const chip = async () => {
-    await sheet.focus();
-    await page.keyboard.press('Control+a');
-    await page.evaluate(() => navigator.clipboard.writeText(''));
-    await page.keyboard.press('Control+c');
-    await page.waitForFunction(async () => (await navigator.clipboard.readText()).length > 0);
-    const text = await page.evaluate(() => navigator.clipboard.readText());
-    return readDescription(text);
-  };
+  const chip = async () => readDescription(await description(page));
   try {
     await answered(page);
     await expect.poll(() => verdicts.textContent()).toMatch(/±\s[\d.]+\s%/);

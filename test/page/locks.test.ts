@@ -1,6 +1,6 @@
 import { join } from 'node:path';
 import { expect, test } from 'vitest';
-import { answered, placeOnPage, sit } from './desk.ts';
+import { answered, description, placeOnPage, sit } from './desk.ts';
 
 /** What is locked stays where it is, whatever is tried, and is locked when the project is opened again. */
 
@@ -20,15 +20,7 @@ test('a locked channel is not moved by hand, keys, fields or what it is joined t
     await page.keyboard.press('l');
     const held = page.locator('.card .held');
     await held.waitFor();
-    const description = async (): Promise<string> => {
-      await sheet.focus();
-      await page.keyboard.press('Control+a');
-      await page.evaluate(() => navigator.clipboard.writeText(''));
-      await page.keyboard.press('Control+c');
-      await page.waitForFunction(async () => (await navigator.clipboard.readText()).includes('"feed"'));
-      return page.evaluate(() => navigator.clipboard.readText());
-    };
-    const before = await description();
+    const before = await description(page);
     const again = async (): Promise<void> => {
       await page.getByRole('gridcell', { name: 'feed', exact: true }).click();
       await held.waitFor();
@@ -58,7 +50,7 @@ test('a locked channel is not moved by hand, keys, fields or what it is joined t
       .getByText(/feed is locked/)
       .waitFor();
     await page.locator('.card').getByLabel('Length').press('Escape');
-    expect(await description()).toBe(before);
+    expect(await description(page)).toBe(before);
     // its width is no place
     await again();
     await page.locator('.card').getByLabel('Width', { exact: true }).fill('210 um');

@@ -6,7 +6,7 @@ import AxeBuilder from 'axe-core';
 import type { Page } from 'playwright-core';
 import { expect, test } from 'vitest';
 import type { Result } from '../../solver/chip/result.ts';
-import { answered, type Sitting, sit } from './desk.ts';
+import { answered, copied, description, type Sitting, sit } from './desk.ts';
 
 /**
  * The job from end to end in a real browser: from an empty chip to a four-way splitter with its targets met
@@ -34,14 +34,9 @@ function rowsOf(tsv: string): Map<string, Map<string, string>> {
   );
 }
 
-const clipboard = (page: Page): Promise<string> => page.evaluate(() => navigator.clipboard.readText());
-
 /** The table as copied against the result: twelve digits, which is all that the table carries. */
 async function sameAsCommandLine({ page, host }: Sitting, table: string): Promise<void> {
-  await page.locator('.sheet-surface').first().focus();
-  await page.keyboard.press('Control+a');
-  await page.keyboard.press('Control+c');
-  const result = await commandLine(host.data, await clipboard(page));
+  const result = await commandLine(host.data, await description(page));
   const rows = rowsOf(table);
   expect(result.ports).toHaveLength(5);
   for (const port of result.ports) {
@@ -83,9 +78,8 @@ test('by mouse: a splitting tree, targets met, table copied', async () => {
       .first()
       .waitFor();
     await page.getByRole('tab', { name: /Ports 5/ }).click();
-    await page.getByRole('button', { name: 'Copy table' }).click();
+    const table = await copied(page, () => page.getByRole('button', { name: 'Copy table' }).click());
     await page.getByText(/Copied five rows/).waitFor();
-    const table = await clipboard(page);
     await sameAsCommandLine(sitting, table);
     expect(sitting.strangers).toEqual([]);
     expect(sitting.errors).toEqual([]);
@@ -155,9 +149,8 @@ test('by keyboard alone: seven channels and five ports typed, targets given, tab
       if (await page.evaluate(() => document.activeElement?.textContent === 'Copy table')) break;
       await key('Shift+Tab');
     }
-    await key('Enter');
+    const table = await copied(page, () => key('Enter'));
     await page.getByText(/Copied five rows/).waitFor();
-    const table = await clipboard(page);
     await sameAsCommandLine(sitting, table);
     expect(sitting.strangers).toEqual([]);
     expect(sitting.errors).toEqual([]);

@@ -4,7 +4,7 @@ import { join } from 'node:path';
 import AxeBuilder from 'axe-core';
 import type { Page } from 'playwright-core';
 import { expect, test, vi } from 'vitest';
-import { answered, placeOnPage, sit } from './desk.ts';
+import { answered, copied, placeOnPage, sit } from './desk.ts';
 import { EVERYTHING } from './everything.ts';
 
 /** What the page does in states that a day brings: dragging, motion, forced colours, every panel, a remedy. */
@@ -165,9 +165,8 @@ test('a remedy is made by its button and its finding is gone; a table is edited 
     await cell.fill('321 um');
     await cell.press('Enter');
     await cell.waitFor({ state: 'detached' });
-    await page.getByRole('button', { name: 'Copy table' }).click();
+    const table = await copied(page, () => page.getByRole('button', { name: 'Copy table' }).click());
     await page.getByText(/^Copied/).waitFor();
-    const table = await page.evaluate(() => navigator.clipboard.readText());
     const rows = table.split('\r\n').map((line) => line.split('\t'));
     expect(rows[0]![column]).toMatch(/^width.*µm$/);
     expect(rows.some((row) => row[column] === '321')).toBe(true);
