@@ -6,6 +6,8 @@ export const EVENTS_PATH = '/events';
 /** Tells the windows of one browser apart; its presence also keeps other sites' forms from ever fitting. */
 export const WINDOW_HEADER = 'x-channelwright-window';
 export const BODY_TYPE = 'application/x-channelwright';
+/** Bytes of a request that browsers still carry after the page is gone: by the Fetch standard 64 KiB in all. */
+const MOST_LEFT_BEHIND = 60_000;
 
 export interface LoopbackOptions {
   /** '' (the page's own origin) or "http://127.0.0.1:port". */
@@ -21,12 +23,24 @@ export interface LoopbackOptions {
 export function loopbackTransport(options: LoopbackOptions): Transport {
   const get = options.fetch ?? fetch;
   const headers = { ...options.headers, [WINDOW_HEADER]: options.window };
+  let leaving = false;
+  // in a page; other clients have no such events
+  const { addEventListener: on } = globalThis as {
+    readonly addEventListener?: (name: string, listener: () => void) => void;
+  };
+  on?.('pagehide', () => {
+    leaving = true;
+  });
+  on?.('pageshow', () => {
+    leaving = false;
+  });
   return {
     call: overBytes(async (name, body) => {
       const response = await get(`${options.origin}${REQUEST_PATH}${name}`, {
         method: 'POST',
         headers: { ...headers, 'content-type': BODY_TYPE },
         body,
+        keepalive: leaving && body.byteLength <= MOST_LEFT_BEHIND,
       });
       if (response.headers.get('content-type') !== BODY_TYPE) throw new Error(`answered ${response.status}`);
       return new Uint8Array(await response.arrayBuffer());

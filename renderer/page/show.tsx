@@ -61,6 +61,7 @@ export function showPage({ client, solver, first, build, shown }: Beginning): vo
   );
   client.on('problem', ({ what, remedy }) => desk.say(`${what} ${remedy}`));
   client.on('closing', ({ says }) => desk.say(says));
+  window.addEventListener('pagehide', () => desk.leave());
   startKeyboard(page);
   followHand(desk, bench);
 

@@ -69,6 +69,8 @@ export interface Desk {
   stand(standing: Standing): void;
   /** Resolves when all that was done is kept. */
   settled(): Promise<void>;
+  /** The page is being left: what is not on its way to the host yet goes now. */
+  leave(): void;
   /** The host's number of the last thing kept. */
   position(): number;
 }
@@ -178,7 +180,7 @@ export function createDesk(
     keptView = { ...keptView, ...patch };
     if (project.get()?.mode === 'read-only') return;
     void keeper
-      .settled()
+      .quiet()
       .then(() => client.call('view.keep', { view: keptView }))
       .catch((error: unknown) => say(wordsOf(error)));
   };
@@ -306,6 +308,7 @@ export function createDesk(
       if (modeSays && modeSays !== open.modeSays) say(modeSays);
     },
     settled: () => keeper.settled(),
+    leave: () => keeper.hurry(),
     position: () => keeper.position,
   };
 }

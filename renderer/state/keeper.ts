@@ -16,6 +16,12 @@ export interface KeeperEvents {
   refused(problem: Problem): void;
 }
 
+/**
+ * ms that a deed waits before it is handed over. The host and the page share the processor with the threads
+ * that answer the deed, and the person waits for those.
+ */
+const AFTER = 30;
+
 /** Hands every deed to the host, one after another; the hand never waits for it. */
 export class Keeper {
   private readonly client: Client;
@@ -23,6 +29,8 @@ export class Keeper {
   private readonly queue: Deed[] = [];
   private seq = 0;
   private working: Promise<void> | null = null;
+  /** Begins at once what waits; null where nothing does. */
+  private begin: (() => void) | null = null;
 
   constructor(client: Client, events: KeeperEvents) {
     this.client = client;
@@ -46,12 +54,34 @@ export class Keeper {
 
   add(deed: Deed): void {
     this.queue.push(deed);
-    this.working ??= this.work();
+    this.working ??= this.wait();
   }
 
-  /** Resolves when all that was added is acknowledged or refused. */
+  /** Hands over what waits, now: the page is left, or something needs it kept. */
+  hurry(): void {
+    this.begin?.();
+  }
+
+  /** Resolves when all that was added is acknowledged or refused, and has it done without waiting. */
   async settled(): Promise<void> {
+    this.hurry();
+    await this.quiet();
+  }
+
+  /** Resolves when all that was added is acknowledged or refused, in its own time. */
+  async quiet(): Promise<void> {
     while (this.working) await this.working;
+  }
+
+  private wait(): Promise<void> {
+    return new Promise((resolve) => {
+      const timer = setTimeout(() => this.begin?.(), AFTER);
+      this.begin = () => {
+        clearTimeout(timer);
+        this.begin = null;
+        resolve(this.work());
+      };
+    });
   }
 
   private async work(): Promise<void> {
