@@ -13,12 +13,13 @@ test('what is changed in the moment the page is left is kept', async () => {
     await page.locator('.sheet-surface').first().focus();
     await page.keyboard.press('Control+a');
     expect(await undoes()).not.toContain(':');
+    const loaded = page.waitForEvent('load');
     await page.evaluate(() => {
       const key = { key: 'x', code: 'KeyX', bubbles: true, cancelable: true };
       document.activeElement!.dispatchEvent(new KeyboardEvent('keydown', key));
       location.reload();
     });
-    await page.waitForEvent('load');
+    await loaded;
     await page.locator('.frame').waitFor();
     await expect.poll(undoes).toMatch(/^Undo: mirror /);
     expect(sitting.strangers).toEqual([]);
