@@ -36,20 +36,18 @@ export async function browserPath(): Promise<string> {
   }
 }
 
+export const ARGUMENTS: readonly string[] = [
+  '--no-sandbox',
+  '--disable-gpu',
+  '--no-first-run',
+  '--disable-background-networking',
+  '--disable-component-update',
+  '--disable-sync',
+  '--force-color-profile=srgb',
+  // as the desktop build starts it
+  `--js-flags=${ENGINE}`,
+];
+
 export async function launch(): Promise<Browser> {
-  return chromium.launch({
-    executablePath: await browserPath(),
-    headless: true,
-    args: [
-      '--no-sandbox',
-      '--disable-gpu',
-      '--no-first-run',
-      '--disable-background-networking',
-      '--disable-component-update',
-      '--disable-sync',
-      '--force-color-profile=srgb',
-      // as the desktop build starts it
-      `--js-flags=${ENGINE}`,
-    ],
-  });
+  return chromium.launch({ executablePath: await browserPath(), headless: true, args: [...ARGUMENTS] });
 }
