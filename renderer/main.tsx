@@ -15,8 +15,9 @@ import { solvesEarly } from './state/early.ts';
 import { keptBy } from './state/kept-by.ts';
 
 /**
- * What takes longest begins first: the host is asked what is open, and the solving thread starts, while the
- * page itself is still being read. Where the answers are known already, that thread starts when they are drawn.
+ * What takes longest begins first: the host is asked what is open while the page itself is still being read. The
+ * solving thread starts when it is known what is open, or when the page is there and still waits for that; where
+ * the answers are known already, when they are drawn.
  */
 const solving = workerThread();
 const thread = patient(solving);
@@ -37,7 +38,9 @@ const { solver, early } = solvesEarly(
   }),
 );
 // what this window had open before it was loaded anew, or what the program was started with
+let told = false;
 const first = client.call('project.state', {}).then(({ state }) => {
+  told = true;
   const known = state !== null && keptBy(state.view) === build;
   if (known) thread.hold();
   else solving.begin();
@@ -45,9 +48,10 @@ const first = client.call('project.state', {}).then(({ state }) => {
   return state;
 });
 startTheme();
-void import('./page/show.tsx').then(({ showPage }) =>
-  showPage({ client, solver, first, build, shown: thread.release }),
-);
+void import('./page/show.tsx').then(({ showPage }) => {
+  if (!told) solving.begin();
+  showPage({ client, solver, first, build, shown: thread.release });
+});
 
 /** This window's own name, which stays while it is loaded anew. */
 function windowName(): string {
