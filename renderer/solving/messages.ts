@@ -95,6 +95,8 @@ export type News =
       readonly kind: 'short';
       readonly id: number;
       readonly answers: readonly Answer[];
+      /** Junctions that count as ideal in them, as in `Answered`. */
+      readonly waiting: number;
       /** ms since 1970 when the answer was begun and when it was ready, for whoever measures. */
       readonly times: { readonly began: number; readonly ready: number };
     }

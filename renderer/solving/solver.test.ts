@@ -24,7 +24,13 @@ function bench() {
   };
   const solver = createSolver(thread, undefined, (then) => then());
   const answer = (id: number, waiting: number, of: Outcome = outcome): void => {
-    tell({ kind: 'short', id, answers: answersOf(`answer ${id}`), times: { began: 0, ready: 0 } });
+    tell({
+      kind: 'short',
+      id,
+      answers: answersOf(`answer ${id}`),
+      waiting: 0,
+      times: { began: 0, ready: 0 },
+    });
     tell({ kind: 'solved', id, graph: null, outcome: of, waiting });
   };
   return { solver, answer, tell };
@@ -46,7 +52,13 @@ test('what is presumed gives way to an edit and to a chip that cannot be solved'
   edited.solver.load(chip, {});
   edited.solver.presume(answersOf('as kept'));
   edited.solver.edit({ label: 'nothing', changes: [] }, { ...chip });
-  edited.tell({ kind: 'short', id: 2, answers: answersOf('of the edit'), times: { began: 0, ready: 0 } });
+  edited.tell({
+    kind: 'short',
+    id: 2,
+    answers: answersOf('of the edit'),
+    waiting: 0,
+    times: { began: 0, ready: 0 },
+  });
   expect(edited.solver.short.get()).toEqual(answersOf('of the edit'));
 
   const stuck = bench();

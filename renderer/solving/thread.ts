@@ -189,7 +189,7 @@ export function solvingThread(
     });
     const { timeOrigin } = performance;
     const times = { began: timeOrigin + began, ready: timeOrigin + performance.now() };
-    tell({ kind: 'short', id: newest, answers, times });
+    tell({ kind: 'short', id: newest, answers, waiting: waiting.length, times });
   };
   const answer = (): void => {
     asked = false;
