@@ -267,12 +267,19 @@ test('where the hand rests, what it holds is solved ahead; let go there, it is a
   expect(ahead.cells.length).toBeGreaterThan(0);
   // what is held goes on being shown as rough as it was
   expect(of('dragged').length).toBe(dragged);
+  // the hand goes on: that is dropped before its preview is answered, and begun anew where it rests
+  order({ kind: 'drag', id: 3, edit: { label: 'as it would be', changes } });
+  expect(handed.at(-1)).toMatchObject({ cells: [], ahead: false });
+  expect(of('dragged').length).toBe(dragged);
+  expect(settle()).toBe(true);
+  expect(wait()).toBe(true);
+  expect(handed.at(-1)).toMatchObject({ ahead: true, accuracy: { flow: 0.02 } });
   expect(of('solved').every(({ id }) => id === 1)).toBe(true);
 
-  order({ kind: 'edit', id: 3, edit: { label: 'widen the outlet', changes } });
-  order({ kind: 'drag', id: 4, edit: null });
+  order({ kind: 'edit', id: 4, edit: { label: 'widen the outlet', changes } });
+  order({ kind: 'drag', id: 5, edit: null });
   expect(settle()).toBe(true);
-  const answers = of('solved').filter(({ id }) => id === 3);
+  const answers = of('solved').filter(({ id }) => id === 4);
   expect(answers[0]).toMatchObject({ waiting: 0, outcome: { ok: true } });
   const { outcome } = answers[0]!;
   const fresh = solve({ ...chip, channels: chip.channels.map((one) => (one === moved ? part : one)) }, FAIR);

@@ -340,6 +340,8 @@ export function solvingThread(
             const { id, edit } = order;
             if (!drag) held.begin();
             drag = { id, chip: applyEdit(chip, edit), base: chip, edit };
+            // the hand went on: what was begun ahead of it would take the processor from its preview
+            hand?.solve([], PREVIEW_ACCURACY);
             dragSoon();
           } catch {
             // there it could not stay: the answer before it stands
