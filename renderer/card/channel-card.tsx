@@ -1,10 +1,10 @@
-import { useMemo } from 'react';
+import { memo, useMemo } from 'react';
 import type { Channel, Chip } from '../../solver/chip/chip.ts';
 import type { ChannelResult, Result } from '../../solver/chip/result.ts';
 import { pathLength } from '../geometry/path.ts';
 import { usePage } from '../page/context.tsx';
 import { shown } from '../sheet/overlay.ts';
-import { useAnswer } from '../state/live.ts';
+import { useAnswer, useResult } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { placeName } from '../verdict/answer.ts';
 import { bandOf, plusMinus } from '../words/band.ts';
@@ -36,11 +36,8 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
     });
   };
   const nm = (metres: number): number => Math.round(metres * 1e9);
-  const ramp = useMemo(() => shown('wall shear', chip, result), [chip, result]);
   const tapered = channel.width[0] !== channel.width[1];
   const length = pathLength(channel.path, channel.bendRadius);
-  // a channel that lies in solved junctions all the way has no piece of its own
-  const widest = solved?.pieces.toSorted((a, b) => (b.peakWallShear ?? 0) - (a.peakWallShear ?? 0))[0];
   return (
     <>
       <h2>{channel.id}</h2>
@@ -49,22 +46,7 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
         {layer && `, ${lengthFigure(channel.depth ?? layer.depth, { digits: 3 })} deep`}
         {channel.depth !== undefined && ', a depth of its own'}
       </p>
-      {layer && (
-        <SectionPicture
-          layer={channel.depth === undefined ? layer : { ...layer, depth: channel.depth }}
-          width={Math.min(...channel.width)}
-          flow={widest?.flow ?? null}
-          viscosity={result?.fluid.viscosity ?? null}
-          fluid={chip.fluid}
-          told={{
-            mean: widest?.meanWallShear ?? null,
-            peak: widest?.peakWallShear ?? null,
-            speed: widest?.peakVelocity ?? null,
-            uniform: !tapered && layer.roof === undefined,
-          }}
-          most={ramp.to}
-        />
-      )}
+      <SectionOf id={channel.id} />
       <div className="fields">
         <QuantityField
           label={tapered ? 'Width, start' : 'Width'}
@@ -154,6 +136,37 @@ export function ChannelCard({ channel }: { readonly channel: Channel }) {
     </>
   );
 }
+
+/** Its cross-section as the newest answer has it: drawn anew with that, not with every figure typed. */
+const SectionOf = memo(function SectionOf({ id }: { readonly id: string }) {
+  const { desk } = usePage();
+  const chip = useStore(desk.drawn.sheet)!;
+  const { chip: answered, result } = useResult(desk);
+  const of = answered ?? chip;
+  const ramp = useMemo(() => shown('wall shear', of, result), [of, result]);
+  const channel = chip.channels.find((found) => found.id === id);
+  const layer = chip.layers.find((found) => found.id === channel?.layer);
+  if (!channel || !layer) return null;
+  const solved = result?.channels.find((found) => found.id === id);
+  // a channel that lies in solved junctions all the way has no piece of its own
+  const widest = solved?.pieces.toSorted((a, b) => (b.peakWallShear ?? 0) - (a.peakWallShear ?? 0))[0];
+  return (
+    <SectionPicture
+      layer={channel.depth === undefined ? layer : { ...layer, depth: channel.depth }}
+      width={Math.min(...channel.width)}
+      flow={widest?.flow ?? null}
+      viscosity={result?.fluid.viscosity ?? null}
+      fluid={chip.fluid}
+      told={{
+        mean: widest?.meanWallShear ?? null,
+        peak: widest?.peakWallShear ?? null,
+        speed: widest?.peakVelocity ?? null,
+        uniform: channel.width[0] === channel.width[1] && layer.roof === undefined,
+      }}
+      most={ramp.to}
+    />
+  );
+});
 
 function between(solved: ChannelResult | undefined): string {
   const first = solved?.pieces[0];

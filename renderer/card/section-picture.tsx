@@ -1,4 +1,4 @@
-import { memo, useDeferredValue, useEffect, useMemo, useReducer } from 'react';
+import { useEffect, useMemo, useReducer } from 'react';
 import type { Layer } from '../../solver/chip/chip.ts';
 import { unitInPrint } from '../../solver/chip/units-format.ts';
 import type { FluidSpec } from '../../solver/fluid/spec.ts';
@@ -46,13 +46,7 @@ function nearest({ x, y, shear }: PerimeterCurve, px: number, py: number): numbe
  * The cross-section with the wall shear drawn outward from its wall, in the colours of the sheet; figures
  * where it is read: roof and floor, and the side.
  */
-export function SectionPicture(props: SectionPictureProps) {
-  // an edit is answered before it is drawn
-  return <Drawing of={useDeferredValue(props)} />;
-}
-
-const Drawing = memo(function Drawing({ of }: { readonly of: SectionPictureProps }) {
-  const { layer, width, flow, viscosity, fluid, told, most } = of;
+export function SectionPicture({ layer, width, flow, viscosity, fluid, told, most }: SectionPictureProps) {
   const [, again] = useReducer((n: number) => n + 1, 0);
   useEffect(() => onTheme(again), []);
   const wide = width / 1e9;
@@ -156,4 +150,4 @@ const Drawing = memo(function Drawing({ of }: { readonly of: SectionPictureProps
       </svg>
     </figure>
   );
-});
+}

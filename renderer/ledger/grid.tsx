@@ -1,4 +1,4 @@
-import { useEffect, useId, useLayoutEffect, useMemo, useRef, useState } from 'react';
+import { memo, useEffect, useId, useLayoutEffect, useMemo, useRef, useState } from 'react';
 import { inUnit } from '../../solver/chip/units.ts';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
@@ -29,7 +29,7 @@ export interface GridProps {
  * A table as an ARIA grid with one tab stop: arrows move the cell at hand, with Shift they choose on the way,
  * Enter edits or chooses, Space chooses. Only rows in view are in the page, however many there are.
  */
-export function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
+export const Grid = memo(function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
   const { desk, commands } = usePage();
   const id = useId();
   const selection = useStore(desk.view, (view) => view.selection);
@@ -286,4 +286,4 @@ export function Grid({ label, table, shown, rows, order, onOrder }: GridProps) {
       </div>
     </div>
   );
-}
+});

@@ -1,4 +1,4 @@
-import { useDeferredValue, useMemo, useState } from 'react';
+import { useCallback, useDeferredValue, useMemo, useState } from 'react';
 import { usePage } from '../page/context.tsx';
 import { useStore } from '../state/store.ts';
 import { TABS, type Tab } from '../state/view.ts';
@@ -11,14 +11,12 @@ import { countOf, tableOf } from './tables.ts';
 /** The tables under the sheet: everything on the sheet, operable without seeing it. */
 export function Ledger() {
   const { desk } = usePage();
-  const open = useStore(desk.project)!.document.chip;
-  const solved = useStore(desk.solver.solved);
   // an edit is answered before its row is set anew
+  const open = useStore(desk.drawn.tables)!;
+  const told = useStore(desk.solver.solved, (solved) => solved.result);
+  const read = useStore(desk.solver.solved, (solved) => solved.graph);
   const { chip, result, graph } = useDeferredValue(
-    useMemo(
-      () => ({ chip: open, result: solved.result, graph: solved.graph }),
-      [open, solved.result, solved.graph],
-    ),
+    useMemo(() => ({ chip: open, result: told, graph: read }), [open, told, read]),
   );
   const tab = useStore(desk.view, (view) => view.tab);
   const [words, setWords] = useState('');
@@ -28,6 +26,10 @@ export function Ledger() {
   // before there is an answer all columns stand, so that none comes as the first one does
   const shown = useMemo(() => (known ? columnsShown(table) : table.columns.map((_, i) => i)), [table, known]);
   const order = orders[tab] ?? null;
+  const onOrder = useCallback(
+    (next: Order | null) => setOrders((before) => ({ ...before, [tab]: next })),
+    [tab],
+  );
   const rows = useMemo(() => ordered(filtered(table, words), table, order), [table, words, order]);
   const copy = async (): Promise<void> => {
     try {
@@ -95,7 +97,7 @@ export function Ledger() {
             shown={shown}
             rows={rows}
             order={order}
-            onOrder={(next) => setOrders({ ...orders, [tab]: next })}
+            onOrder={onOrder}
           />
         )}
       </div>

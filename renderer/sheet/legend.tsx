@@ -3,7 +3,7 @@ import { unitInPrint } from '../../solver/chip/units-format.ts';
 import { shades } from '../look/ramp.ts';
 import { onTheme, palette, scheme } from '../look/theme.ts';
 import { usePage } from '../page/context.tsx';
-import { useAnswer } from '../state/live.ts';
+import { useResult } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { figureIn, unitFor } from '../words/figure.ts';
 import { placeOn, shown } from './overlay.ts';
@@ -14,14 +14,12 @@ const WIDTH = 188;
 export function Legend() {
   const { desk } = usePage();
   const overlay = useStore(desk.view, (view) => view.overlay);
-  const { chip: solvedChip, result, graph, problem } = useAnswer(desk);
-  const chip = useStore(desk.project)!.document.chip;
+  const { chip: solvedChip, result, graph, problem } = useResult(desk);
+  const drawn = useStore(desk.drawn.sheet)!;
+  const chip = solvedChip ?? drawn;
   const [, again] = useReducer((n: number) => n + 1, 0);
   useEffect(() => onTheme(again), []);
-  const now = useMemo(
-    () => shown(overlay, solvedChip ?? chip, result, graph),
-    [overlay, solvedChip, result, graph, chip],
-  );
+  const now = useMemo(() => shown(overlay, chip, result, graph), [overlay, chip, result, graph]);
   const bare = now.values.size === 0 && now.chambers.size === 0;
   if (now.overlay === 'findings' || bare)
     return (

@@ -39,9 +39,6 @@ interface Derived {
   readonly places: readonly PlaceWords[];
 }
 
-/** ms that the drawing of an edit from a field waits for its answer, so that the five answers are painted first. */
-const ANSWER_FIRST = 60;
-
 /** Joins the desk to the canvas: what changes is drawn at the next frame, once. */
 export function createPicture(container: HTMLDivElement, desk: Desk, bench: Workbench): () => void {
   let derived: Derived | null = null;
@@ -159,21 +156,6 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
   });
 
   const drawAll = (): void => painter.redraw('chip', 'flow', 'marks', 'hand');
-  let drawn = desk.chip();
-  let owed = 0;
-  const drawEdit = (): void => {
-    // that it was kept changes nothing on the sheet
-    if (desk.chip() === drawn) return;
-    drawn = desk.chip();
-    clearTimeout(owed);
-    owed = inField() ? window.setTimeout(drawOwed, ANSWER_FIRST) : 0;
-    if (owed === 0) drawAll();
-  };
-  const drawOwed = (): void => {
-    clearTimeout(owed);
-    owed = 0;
-    drawAll();
-  };
   let answer = desk.solver.solved.get();
   const drawAnswer = (): void => {
     const before = answer;
@@ -181,8 +163,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
     // that one is on its way changes nothing either
     if (answer.chip === before.chip && answer.result === before.result && answer.graph === before.graph)
       return;
-    if (owed !== 0) drawOwed();
-    else painter.redraw('chip', 'flow', 'marks');
+    painter.redraw('chip', 'flow', 'marks');
   };
   let seen = desk.view.get();
   const stops = [
@@ -197,8 +178,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       if (view.selection !== before.selection || view.tool !== before.tool) painter.redraw('hand');
     }),
     underlayOf(desk).subscribe(() => painter.redraw('chip', 'marks')),
-    desk.project.subscribe(drawEdit),
-    () => clearTimeout(owed),
+    desk.drawn.sheet.subscribe(drawAll),
     desk.solver.solved.subscribe(drawAnswer),
     desk.solver.live.subscribe(drawAll),
     bench.hand.subscribe(() => painter.redraw('hand')),
@@ -247,10 +227,6 @@ function takeFoot(room: Room, { width, height }: { readonly width: number; reado
   if (wide > 0) room.fill(LEGEND.from, height - LEGEND.high, wide, LEGEND.high);
   room.fill(width - SCALE.wide, height - SCALE.high, SCALE.wide, SCALE.high);
 }
-
-/** Whether the hand is at a field: then what it changes is no part of what it holds on the sheet. */
-const inField = (): boolean =>
-  document.activeElement?.matches('input, select, textarea, [role="gridcell"]') ?? false;
 
 /** Where a part, a piece or a place read from the chip lies; its middle. */
 export function placeOf(chip: Chip, where: string): Xy | null {

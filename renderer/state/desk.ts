@@ -9,6 +9,7 @@ import type { Solver } from '../solving/solver.ts';
 import type { Alteration } from '../tools/tool.ts';
 import type { Answer } from '../verdict/answer.ts';
 import { type Document, done, openDocument, redo, undo } from './document.ts';
+import { atField, besideTables, drawnChip } from './drawn.ts';
 import { Keeper } from './keeper.ts';
 import { lockRefusal, readLocks, renamedLocks } from './locks.ts';
 import { createStore, type Store } from './store.ts';
@@ -42,6 +43,8 @@ export interface Desk {
   readonly view: Store<View>;
   /** Waiting for the host to open something. */
   readonly opening: Store<string>;
+  /** The chip for the sheet and the pictures beside it, and for the tables: while a field's edit is answered, the one before. */
+  readonly drawn: { readonly sheet: Store<Chip | null>; readonly tables: Store<Chip | null> };
   chip(): Chip | null;
   spatial(): Spatial;
   /** Makes the change; null, or why it was not made. */
@@ -87,6 +90,10 @@ export function createDesk(
   const project = createStore<Project | null>(null);
   const view = createStore<View>(FIRST_VIEW);
   const opening = createStore('');
+  const drawn = {
+    sheet: drawnChip(project, solver, atField),
+    tables: drawnChip(project, solver, besideTables),
+  };
   let spatial: Spatial | null = null;
   let keptView: KeptView = {};
   const say = (text: string): void => view.patch({ says: text });
@@ -220,6 +227,7 @@ export function createDesk(
     project,
     view,
     opening,
+    drawn,
     say,
     lock,
     keptView: () => keptView,

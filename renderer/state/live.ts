@@ -77,3 +77,13 @@ export const shownAnswer = (live: Live | null, solved: Solved): Answer =>
 export function useAnswer(desk: Desk): Answer {
   return shownAnswer(useStore(desk.solver.live), useStore(desk.solver.solved));
 }
+
+/** What is told of the chip, for what does not say whether a newer answer is on its way. */
+export function useResult(desk: Desk): Pick<Answer, 'chip' | 'result' | 'problem' | 'graph'> {
+  const live = useStore(desk.solver.live);
+  const chip = useStore(desk.solver.solved, (solved) => solved.chip);
+  const result = useStore(desk.solver.solved, (solved) => solved.result);
+  const problem = useStore(desk.solver.solved, (solved) => solved.problem);
+  const graph = useStore(desk.solver.solved, (solved) => solved.graph);
+  return live ?? { chip, result, problem, graph };
+}

@@ -1,4 +1,4 @@
-import { useEffect, useMemo, useRef, useState } from 'react';
+import { memo, useEffect, useMemo, useRef, useState } from 'react';
 import { usePage } from '../page/context.tsx';
 import { useAnswer } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
@@ -8,7 +8,7 @@ import { verdicts } from './verdicts.ts';
 
 /** The five questions, always on screen. */
 export function VerdictBar() {
-  const { desk, commands, preferences } = usePage();
+  const { desk, preferences } = usePage();
   const project = useStore(desk.project)!;
   const solved = useAnswer(desk);
   const { units } = useStore(preferences.store);
@@ -37,20 +37,15 @@ export function VerdictBar() {
       data-preview={solved.preview || undefined}
     >
       {answers.map((answer) => (
-        <Verdict key={answer.question} answer={answer} onCulprit={(ref) => commands.show(ref)} />
+        <Verdict key={answer.question} answer={answer} />
       ))}
       <Announcement answers={answers} busy={busy} />
     </section>
   );
 }
 
-function Verdict({
-  answer,
-  onCulprit,
-}: {
-  readonly answer: Answer;
-  readonly onCulprit: (ref: string) => void;
-}) {
+const Verdict = memo(function Verdict({ answer }: { readonly answer: Answer }) {
+  const { commands } = usePage();
   const { culprit } = answer;
   const text = plainText(answer.says);
   const says = answer.says.map((run, i) =>
@@ -61,7 +56,7 @@ function Verdict({
     <article className="verdict" data-standing={answer.standing} data-length={lengthOf(text)}>
       <h2 className="verdict-question">{answer.question}</h2>
       {culprit ? (
-        <button type="button" className="verdict-says" title={text} onClick={() => onCulprit(culprit)}>
+        <button type="button" className="verdict-says" title={text} onClick={() => commands.show(culprit)}>
           {says}
         </button>
       ) : (
@@ -72,7 +67,7 @@ function Verdict({
       {answer.margin && <MarginGraph margin={answer.margin} />}
     </article>
   );
-}
+});
 
 /** Long sentences are set smaller where they would not have room. */
 const lengthOf = (text: string): string | undefined =>
