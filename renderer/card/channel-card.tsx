@@ -4,7 +4,7 @@ import type { ChannelResult, Result } from '../../solver/chip/result.ts';
 import { pathLength } from '../geometry/path.ts';
 import { usePage } from '../page/context.tsx';
 import { shown } from '../sheet/overlay.ts';
-import { useAnswer, useResult } from '../state/live.ts';
+import { useResult } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { placeName } from '../verdict/answer.ts';
 import { bandOf, plusMinus } from '../words/band.ts';
@@ -23,7 +23,7 @@ import { ChoiceField, Figure } from './text-field.tsx';
 export function ChannelCard({ channel }: { readonly channel: Channel }) {
   const { desk } = usePage();
   const chip = useStore(desk.project)!.document.chip;
-  const { result } = useAnswer(desk);
+  const { result } = useResult(desk);
   const layer = chip.layers.find((found) => found.id === channel.layer);
   const solved = result?.channels.find((found) => found.id === channel.id);
   const put = (change: Partial<Channel>, label: string): string | null =>

@@ -1,7 +1,7 @@
 import type { Drive, Port } from '../../solver/chip/chip.ts';
 import type { Pump, Reservoir } from '../../solver/chip/running.ts';
 import { usePage } from '../page/context.tsx';
-import { useAnswer } from '../state/live.ts';
+import { useResult } from '../state/live.ts';
 import { useStore } from '../state/store.ts';
 import { plusMinus } from '../words/band.ts';
 import { figure, lengthFigure } from '../words/figure.ts';
@@ -18,7 +18,7 @@ import { ChoiceField, Figure } from './text-field.tsx';
 export function PortCard({ port }: { readonly port: Port }) {
   const { desk } = usePage();
   const chip = useStore(desk.project)!.document.chip;
-  const { result } = useAnswer(desk);
+  const { result } = useResult(desk);
   const solved = result?.ports.find((found) => found.id === port.id);
   const put = (change: Partial<Port>, label: string): string | null =>
     desk.attempt({ label, put: [{ kind: 'port', value: { ...port, ...change } }] });

@@ -1,5 +1,5 @@
 import { usePage } from '../page/context.tsx';
-import { useAnswer } from '../state/live.ts';
+import { useResult } from '../state/live.ts';
 import { placeName } from '../verdict/answer.ts';
 import { bandOf, plusMinus } from '../words/band.ts';
 import { capital, counted, figure, lengthFigure } from '../words/figure.ts';
@@ -9,7 +9,7 @@ import { Figure } from './text-field.tsx';
 /** A junction or another place that is read from the drawing: what meets there, and what flows. */
 export function SiteCard({ name }: { readonly name: string }) {
   const { desk } = usePage();
-  const { graph, result } = useAnswer(desk);
+  const { graph, result } = useResult(desk);
   const site = graph?.sites.find((found) => found.name === name);
   const cell = result?.cells.find((found) => found.id === name);
   if (!site && !cell) return <p className="soft">{placeName(name)} is not on the chip any more.</p>;

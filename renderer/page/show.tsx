@@ -1,4 +1,5 @@
 import { useEffect } from 'react';
+import { flushSync } from 'react-dom';
 import { createRoot } from 'react-dom/client';
 import type { Client } from '../../main/contract/client.ts';
 import type { ProjectState } from '../../main/contract/contract.ts';
@@ -64,6 +65,9 @@ export function showPage({ client, solver, first, build, shown }: Beginning): vo
   window.addEventListener('pagehide', () => desk.leave());
   startKeyboard(page);
   followHand(desk, bench);
+  // what the hand does next is done to what is there, whether or not it was shown yet
+  for (const kind of ['keydown', 'pointerdown', 'wheel', 'input'])
+    window.addEventListener(kind, () => flushSync(desk.project.tell), { capture: true, passive: true });
 
   setTimeout(() => void bringReading().catch(() => undefined), STARTED);
   const late = new Promise((done) => setTimeout(done, PATIENCE));

@@ -9,10 +9,10 @@ import type { Solver } from '../solving/solver.ts';
 import type { Alteration } from '../tools/tool.ts';
 import type { Answer } from '../verdict/answer.ts';
 import { type Document, done, openDocument, redo, undo } from './document.ts';
-import { atField, besideTables, drawnChip } from './drawn.ts';
+import { atField, besideTables, drawnChip, toldWithAnswer } from './drawn.ts';
 import { Keeper } from './keeper.ts';
 import { lockRefusal, readLocks, renamedLocks } from './locks.ts';
-import { createStore, type Store } from './store.ts';
+import { createStore, type PatientStore, type Store } from './store.ts';
 import { FIRST_VIEW, type View } from './view.ts';
 
 /** The open project as the page holds it. */
@@ -39,7 +39,7 @@ export type KeptView = Input<'view.keep'>['view'];
 export interface Desk {
   readonly client: Client;
   readonly solver: Solver;
-  readonly project: Store<Project | null>;
+  readonly project: PatientStore<Project | null>;
   readonly view: Store<View>;
   /** Waiting for the host to open something. */
   readonly opening: Store<string>;
@@ -151,9 +151,14 @@ export function createDesk(
     });
   };
 
+  const owed = toldWithAnswer(project, solver);
   const put = (document: Document, edit: ChipEdit, more: Partial<Project> = {}): void => {
     const open = project.get()!;
-    project.set({ ...open, document, keeping: true, ...more });
+    const next = { ...open, document, keeping: true, ...more };
+    if (besideTables()) {
+      project.hold(next);
+      owed();
+    } else project.set(next);
     solver.edit(edit, document.chip);
     const { selection } = view.get();
     const left = selection.filter((ref) => stillThere(document.chip, ref));

@@ -1,10 +1,36 @@
 import type { Chip } from '../../solver/chip/chip.ts';
 import type { Solver } from '../solving/solver.ts';
 import type { Project } from './desk.ts';
-import { createStore, type Store } from './store.ts';
+import { createStore, type PatientStore, type Store } from './store.ts';
 
-/** ms that what shows an edit of a field waits for its answer, so that the five answers are painted first. */
-export const ANSWER_FIRST = 60;
+/** ms that what takes long to draw waits for the answer to a field's edit, so that the five answers are painted first. */
+const ANSWER_FIRST = 60;
+/** ms that the rest of the page waits for it: no more than would be seen at the field. */
+const SOON = 40;
+
+/**
+ * Tells of a project that was held when its answer is there, at the latest `SOON` after the edit; in a turn of its
+ * own, after the words of the answer.
+ *
+ * @returns called for every edit that is held
+ */
+export function toldWithAnswer(
+  project: PatientStore<Project | null>,
+  solver: Pick<Solver, 'solved' | 'short'>,
+): () => void {
+  let owed: ReturnType<typeof setTimeout> | undefined;
+  const within = (ms: number): void => {
+    clearTimeout(owed);
+    owed = setTimeout(() => {
+      owed = undefined;
+      project.tell();
+    }, ms);
+  };
+  solver.short.subscribe(() => {
+    if (owed !== undefined && solver.short.get() !== null) within(0);
+  });
+  return () => within(SOON);
+}
 
 /**
  * The open chip for what takes long to draw. It is the newest, but while an edit waits for its answer the one

@@ -9,17 +9,36 @@ export interface Store<T> {
   subscribe(listener: () => void): () => void;
 }
 
-export function createStore<T>(first: T): Store<T> {
+/** A store that can hold what it does not tell yet. */
+export interface PatientStore<T> extends Store<T> {
+  /** Replaces the value; who wants to know hears of it with `tell`, or with whatever is set next. */
+  hold(next: T): void;
+  tell(): void;
+}
+
+export function createStore<T>(first: T): PatientStore<T> {
   let value = first;
+  let held = false;
   const listeners = new Set<() => void>();
-  const set = (next: T): void => {
-    if (Object.is(next, value)) return;
-    value = next;
+  const tell = (): void => {
+    held = false;
     for (const listener of [...listeners]) listener();
+  };
+  const set = (next: T): void => {
+    if (Object.is(next, value) && !held) return;
+    value = next;
+    tell();
   };
   return {
     get: () => value,
     set,
+    hold: (next) => {
+      held ||= !Object.is(next, value);
+      value = next;
+    },
+    tell: () => {
+      if (held) tell();
+    },
     patch: (fields) => set({ ...value, ...fields }),
     subscribe: (listener) => {
       listeners.add(listener);
