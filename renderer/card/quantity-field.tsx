@@ -40,15 +40,13 @@ export function QuantityField({
   const [text, setText] = useState(own);
   const [fault, setFault] = useState('');
   const input = useRef<HTMLInputElement>(null);
-  const last = useRef(own);
-  useEffect(() => {
-    // what someone is typing is not overwritten; what changed elsewhere is shown
-    if (last.current !== own) {
-      last.current = own;
-      setText(own);
-      setFault('');
-    }
-  }, [own]);
+  // what someone is typing is not overwritten; what changed elsewhere is shown, before the next key comes
+  const [last, setLast] = useState(own);
+  if (last !== own) {
+    setLast(own);
+    setText(own);
+    setFault('');
+  }
 
   /** Applies what was typed; '' or why it cannot be. */
   const applied = (): string => {

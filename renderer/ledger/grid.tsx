@@ -139,6 +139,9 @@ export const Grid = memo(function Grid({ label, table, shown, rows, order, onOrd
     if (order?.column !== own) onOrder({ column: own, down });
     else if (order.down === down) onOrder({ column: own, down: !down });
     else onOrder(null);
+    // a new order is read from its beginning
+    setAt({ row: -1, column: c });
+    grid.current?.scrollTo({ top: 0 });
   };
   const edit = (text?: string): void => {
     const cell = rows[row]?.cells[index];

@@ -81,7 +81,9 @@ export function placeName(where: string): string {
   if (colon > 0) {
     const kind = where.slice(0, colon);
     const id = where.slice(colon + 1);
-    return (kind === 'port' || kind === 'chamber') && !LITTLE.test(id) ? id : `${kind} ${id}`;
+    // a name may say what it is of: "channel 1"
+    const says = id.startsWith(`${kind} `) || ((kind === 'port' || kind === 'chamber') && !LITTLE.test(id));
+    return says ? id : `${kind} ${id}`;
   }
   return where.replace(/#\d+$/, '');
 }

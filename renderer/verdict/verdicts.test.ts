@@ -372,13 +372,9 @@ describe('Can I trust it?', () => {
 });
 
 test('places by name and reference', () => {
-  expect(['', 'port:in', 'junction:3', 'feed#2', 'chamber:well'].map(placeName)).toEqual([
-    'the chip',
-    'port in',
-    'junction 3',
-    'feed',
-    'well',
-  ]);
+  expect(
+    ['', 'port:in', 'junction:3', 'feed#2', 'chamber:well', 'channel:channel 1', 'via:x'].map(placeName),
+  ).toEqual(['the chip', 'port in', 'junction 3', 'feed', 'well', 'channel 1', 'via x']);
   expect(placeRef('feed#2', teeChip())).toBe('channel:feed');
   expect(placeRef('in', teeChip())).toBe('port:in');
   expect(placeRef('', teeChip())).toBeNull();

@@ -6,6 +6,7 @@ import { splitTree } from '../../renderer/makers/split-tree.ts';
 import { emptyChip } from '../../renderer/testing/chips.ts';
 import { writeDescription } from '../../solver/chip/description-write.ts';
 import { answered, type Sitting, sit } from '../page/desk.ts';
+import { snakeChip } from '../page/snake.ts';
 import { STAGES, stepped } from './page-stages.ts';
 import { memory, starting } from './page-start.ts';
 import type { BenchRow } from './row.ts';
@@ -35,39 +36,6 @@ function treeChip(): string {
   if ('refusal' in making) throw new Error(making.refusal);
   const chip = { ...emptyChip(), name: 'tree', outline: { width: 127_760_000, height: 85_480_000 } };
   return writeDescription({ ...chip, ...making.made });
-}
-
-/** A snake of channels joined end to end, 250 to a row, from one port to another. */
-function snakeChip(count: number): string {
-  const STEP = 380_000;
-  const PITCH = 400_000;
-  const ROW = 250;
-  const at = (i: number): readonly [number, number] => {
-    const row = Math.floor(i / ROW);
-    const along = i % ROW;
-    return [1_000_000 + (row % 2 === 0 ? along : ROW - 1 - along) * STEP, 1_000_000 + row * PITCH];
-  };
-  const channels = Array.from({ length: count }, (_, i) => ({
-    id: `c${i}`,
-    layer: 'flow',
-    path: [at(i), at(i + 1)] as const,
-    width: [100_000, 100_000] as const,
-    bendRadius: 0,
-  }));
-  const port = (id: string, place: readonly [number, number], drive: object) =>
-    ({ id, at: place, layer: 'flow', diameter: 0, drive, tubing: [] }) as const;
-  const rows = Math.ceil(count / ROW) + 1;
-  const chip = {
-    ...emptyChip(),
-    name: `snake of ${count}`,
-    outline: { width: 2_000_000 + ROW * STEP, height: 2_000_000 + rows * PITCH },
-    channels,
-    ports: [
-      port('in', at(0), { kind: 'flow', flow: 1e-9 / 60 }),
-      port('out', at(count), { kind: 'pressure', pressure: 0 }),
-    ],
-  } as ReturnType<typeof emptyChip>;
-  return writeDescription(chip);
 }
 
 /** Four arms that meet in the middle, to be dragged. */

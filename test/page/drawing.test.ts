@@ -151,6 +151,50 @@ test('typed figures and the mouse together; makings again and again; an empty ha
   }
 }, 400_000);
 
+test('a near miss and a join are told at the pointer while they arise, before anything is drawn', async () => {
+  const sitting = await sit();
+  const { page } = sitting;
+  const key = (name: string): Promise<void> => page.keyboard.press(name);
+  const type = (text: string): Promise<void> => page.keyboard.type(text);
+  const note = page.locator('.pointer-note .strong-note');
+  try {
+    await page.getByRole('button', { name: 'Begin', exact: true }).click();
+    await page.locator('.frame').waitFor();
+    await sheet(page).focus();
+    await key('c');
+    for (const text of ['10 mm, 13 mm', '10 mm']) {
+      await type(text);
+      if (text === '10 mm') {
+        await key('Tab');
+        await key('Tab');
+        await type('300');
+        await key('ArrowRight');
+      }
+      await key('Enter');
+    }
+    await key('Escape');
+    await key('c');
+    await type('15 mm, 20 mm');
+    await key('Enter');
+    // down to half a micrometre above the wall of the first, which lies at 13.15 mm
+    await type('6.8495 mm');
+    await key('ArrowDown');
+    await note.getByText(/channel 1.*500\s+nm thick.*Meant to be joined/).waitFor();
+    expect((await described(page)).channels).toHaveLength(1);
+    await sheet(page).focus();
+    await key('c');
+    await type('15 mm, 20 mm');
+    await key('Enter');
+    const at = await placeOnPage(page, SLIDE, 15, 13);
+    await page.mouse.move(at.x, at.y + 30);
+    await page.mouse.move(at.x, at.y + 1, { steps: 4 });
+    await note.getByText('Joins channel 1.').waitFor();
+    expect(sitting.errors).toEqual([]);
+  } finally {
+    await sitting.end();
+  }
+}, 200_000);
+
 test('imposed colours: the word on a strong button is seen', async () => {
   const sitting = await sit({ width: 1280, height: 720 });
   const { page } = sitting;

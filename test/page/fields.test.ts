@@ -6,6 +6,7 @@ import { expect, test, vi } from 'vitest';
 import { dxf, outline } from '../import/read.ts';
 import { answered, description, placeOnPage, sit } from './desk.ts';
 import { EVERYTHING } from './everything.ts';
+import { snakeChip } from './snake.ts';
 
 /**
  * Nonsense in every field that there is: it stays in the field, it is explained beside it, it is never
@@ -267,3 +268,29 @@ test('nonsense in the fields of every panel: repeating, plots, masks, bringing i
     rmSync(folder, { recursive: true, force: true });
   }
 }, 400_000);
+
+test('keys that follow each other faster than answers come all count', async () => {
+  const folder = mkdtempSync(join(tmpdir(), 'channelwright-steps-'));
+  const file = join(folder, 'snake.json');
+  writeFileSync(file, snakeChip(300));
+  const sitting = await sit({ files: [file] });
+  const { page } = sitting;
+  try {
+    await answered(page);
+    await page.getByRole('tab', { name: /^Channels/ }).click();
+    await page.getByRole('gridcell', { name: 'c7', exact: true }).click();
+    const width = page.getByLabel('Width', { exact: true });
+    await width.focus();
+    await Promise.all(Array.from({ length: 7 }, () => page.keyboard.press('ArrowUp')));
+    await vi.waitUntil(async () => /^170\b/.test(await width.inputValue()), { timeout: 10_000 });
+    await page.keyboard.press('ArrowDown');
+    await vi.waitUntil(async () => /^160\b/.test(await width.inputValue()), { timeout: 10_000 });
+    await page.getByRole('button', { name: /^Undo/ }).click();
+    await answered(page);
+    expect(await width.inputValue()).toMatch(/^170\b/);
+    expect(sitting.errors).toEqual([]);
+  } finally {
+    await sitting.end();
+    rmSync(folder, { recursive: true, force: true });
+  }
+}, 200_000);
