@@ -17,7 +17,7 @@ const holding = (chip: Chip): Project => ({ document: { chip, done: [], undone: 
 /** A desk as far as this matters, with what was drawn and told of it. */
 function bench(waits: () => boolean) {
   const project = createStore<Project | null>(null);
-  const solved = createStore({ chip: null, result: null, busy: false } as unknown as Solved);
+  const solved = createStore({ chip: emptyChip(), result: null, busy: false } as unknown as Solved);
   const short = createStore<readonly Answer[] | null>(null);
   const drawn = drawnChip(project, { solved }, waits);
   const names: string[] = [];
@@ -47,6 +47,14 @@ test('an edit of a field is drawn with its answer, not when it is asked for', ()
   expect(names).toEqual(['a', 'b']);
   vi.advanceTimersByTime(1000);
   expect(names).toEqual(['a', 'b']);
+});
+
+test('a chip that is opened while the hand is at a field is drawn at once', () => {
+  const { project, solved, names } = bench(() => true);
+  project.set(holding(named('a')));
+  solved.patch({ chip: null });
+  project.set(holding(named('b')));
+  expect(names.at(-1)).toBe('b');
 });
 
 test('an answer that takes long is not waited for, and of several edits the last is drawn', () => {

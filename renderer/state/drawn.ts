@@ -54,7 +54,9 @@ export function drawnChip(
   project.subscribe(() => {
     // that it was kept changes nothing that is drawn
     if (newest() === drawn.get() || owed !== undefined) return;
-    if (drawn.get() !== null && newest() !== null && waits()) owed = setTimeout(draw, ANSWER_FIRST);
+    // one that was just opened has no answer yet, and nothing before it
+    const edited = drawn.get() !== null && newest() !== null && solver.solved.get().chip !== null;
+    if (edited && waits()) owed = setTimeout(draw, ANSWER_FIRST);
     else draw();
   });
   let answered = solver.solved.get();
