@@ -13,6 +13,7 @@ export function PointerNote() {
   const view = useStore(desk.view);
   const chip = useStore(desk.project)!.document.chip;
   const note = useRef<HTMLDivElement>(null);
+  const size = useRef({ width: 0, height: 0 });
   const preview = bench.preview();
   const answer = useAnswer(desk);
   const figures = useMemo(
@@ -24,18 +25,37 @@ export function PointerNote() {
     [preview.parts, answer, desk],
   );
   const place = anchor(preview, chip.outline.width);
-  useLayoutEffect(() => {
+  const shows = Boolean(preview.readout || preview.hint);
+  const put = (): void => {
     const element = note.current;
     if (!element || !view.camera) return;
     const [x, y] = toScreen(view.camera, view.size, place ?? [0, 0]);
-    const { offsetWidth: width, offsetHeight: height } = element;
+    const { width, height } = size.current;
     const right = x + 18 + width < view.size.width;
     const left = right ? x + 18 : x - 18 - width;
     const top = y + 18 + height < view.size.height ? y + 18 : y - 18 - height;
     element.style.left = `${Math.max(4, Math.min(left, view.size.width - width - 4))}px`;
     element.style.top = `${Math.max(4, Math.min(top, view.size.height - height - 4))}px`;
+  };
+  const latest = useRef(put);
+  useLayoutEffect(() => {
+    latest.current = put;
+    put();
   });
-  if (!preview.readout && !preview.hint) return null;
+  // asked for its size with every move of the hand, the page would be laid out before the answers are painted
+  useLayoutEffect(() => {
+    const element = note.current;
+    if (!shows || !element) return;
+    const watch = new ResizeObserver(([entry]) => {
+      const box = entry?.borderBoxSize[0];
+      if (!box) return;
+      size.current = { width: box.inlineSize, height: box.blockSize };
+      latest.current();
+    });
+    watch.observe(element);
+    return () => watch.disconnect();
+  }, [shows]);
+  if (!shows) return null;
   return (
     <div ref={note} className="pointer-note">
       {preview.readout && (

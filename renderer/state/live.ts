@@ -45,18 +45,26 @@ export function wouldBe(
   }
 }
 
-/** Once a frame, asks what would come of what the hand is about to do. */
+/** Once a frame, asks what would come of what the hand is about to do: at its first move, and at the end of a frame that had more. */
 export function followHand(desk: Desk, bench: Workbench): () => void {
+  let asked = false;
   let due = false;
   const ask = (): void => {
-    due = false;
     const chip = desk.chip();
     desk.solver.drag(chip && wouldBe(chip, bench.preview().parts ?? []));
   };
+  const ended = (): void => {
+    asked = false;
+    if (!due) return;
+    due = false;
+    ask();
+  };
   return bench.hand.subscribe(() => {
-    if (due) return;
-    due = true;
-    requestAnimationFrame(ask);
+    due = asked;
+    if (asked) return;
+    asked = true;
+    ask();
+    requestAnimationFrame(ended);
   });
 }
 
