@@ -13,6 +13,7 @@ import { answersKept, keepAnswers } from '../state/kept-answers.ts';
 import { followHand } from '../state/live.ts';
 import { followOpenings } from '../state/openings.ts';
 import { createPreferences } from '../state/preferences.ts';
+import { tidiedWhenOpened } from '../state/tidied.ts';
 import { createWorkbench } from '../state/workbench.ts';
 import { App } from './app.tsx';
 import { PageContext } from './context.tsx';
@@ -65,6 +66,7 @@ export function showPage({ client, solver, first, build, shown }: Beginning): vo
   window.addEventListener('pagehide', () => desk.leave());
   startKeyboard(page);
   followHand(desk, bench);
+  tidiedWhenOpened(desk);
   // what the hand does next is done to what is there, whether or not it was shown yet
   for (const kind of ['keydown', 'pointerdown', 'wheel', 'input'])
     window.addEventListener(kind, () => flushSync(desk.project.tell), { capture: true, passive: true });

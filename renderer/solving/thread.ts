@@ -26,6 +26,7 @@ import { keeping } from './keep.ts';
 import type { Answered, News, Order, Outcome, PlacedPicture, PlanBox, Refused } from './messages.ts';
 import { refused } from './refusal.ts';
 import { shownGraph } from './shown-graph.ts';
+import { collector, tidying } from './tidy.ts';
 import { keysOf, seenFirst } from './waiting.ts';
 
 /** An answer is given anew for a junction that came only after this many times as long as one takes. */
@@ -113,6 +114,7 @@ export function solvingThread(
   const exercise = hand
     ? exercising(() => chip && { chip, options, cells: memory.cells }, quiet, later, after)
     : null;
+  const tidy = tidying(() => !drag && !asked, after, collector('last-resort'));
   /** Keys the project was asked for, and answers of it that are still to come. */
   const wanted = new Set<string>();
   let open = 0;
@@ -305,6 +307,7 @@ export function solvingThread(
         const { id, fresh, handsOn } = rest;
         rest = null;
         tell({ kind: 'solved', id, ...whole(fresh) });
+        if (chip) tidy.later(chip.channels.length);
         hand?.hold(0);
         if (handsOn && !drag) handOn(fresh.waiting);
         return;
