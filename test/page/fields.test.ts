@@ -214,7 +214,11 @@ test('nonsense in the fields of every panel: repeating, plots, masks, bringing i
     await answered(page);
     const before = await chipNow(page);
     const panels: Readonly<Record<string, () => Promise<unknown>>> = {
-      repeat: () => command('array and offset'),
+      // a command runs after the list of them has closed: the card that was there has fields too
+      repeat: async () => {
+        await command('array and offset');
+        await page.getByLabel('How many in all').waitFor();
+      },
       plots: async () => {
         await command('plots');
         await page.getByLabel('Sweep the').waitFor();
