@@ -4,7 +4,7 @@ import { PALETTES } from '../look/tokens.ts';
 import { teeChip } from '../testing/chips.ts';
 import { fitted, INSET, toScreen } from './camera.ts';
 import { takeEdge } from './edge.ts';
-import { drawPlaceWords, linesOf } from './place-words.ts';
+import { drawPlaceWords, evenLines, linesOf } from './place-words.ts';
 import { Room } from './room.ts';
 import { Spatial } from './spatial.ts';
 import type { PlaceWords } from './words.ts';
@@ -175,4 +175,20 @@ test('a sentence is parted at its spaces, and cut only where it has no more line
   expect(linesOf('one two three four', 8, 4)).toEqual(['one two', 'three', 'four']);
   expect(linesOf('one two three four', 8, 2)).toEqual(['one two', 'three …']);
   expect(linesOf('may be 5.9\u00a0% off', 8, 4)).toEqual(['may be', '5.9\u00a0%', 'off']);
+});
+
+test('lines are as even as their number lets them be', () => {
+  const text =
+    'serpentine 1 ends 335 mm beyond the last place where anything flows, with no port: air stays in it when the chip is filled.';
+  expect(linesOf(text, 40, 4).at(-1)).toBe('filled.');
+  const even = evenLines(text, 40, 4);
+  expect(even.join(' ')).toBe(text);
+  expect(even).toHaveLength(4);
+  const longest = Math.max(...even.map((line) => line.length));
+  expect(longest).toBeLessThan(36);
+  // one sign less, and there would be a line more
+  expect(linesOf(text, longest - 1, 9).length).toBeGreaterThan(4);
+  // what is cut stays as it is, and one line has nothing to share
+  expect(evenLines(text, 26, 4)).toEqual(linesOf(text, 26, 4));
+  expect(evenLines('one two', 40, 4)).toEqual(['one two']);
 });

@@ -15,6 +15,8 @@ const FOOT = 58;
 const COVERS = 6;
 /** px round the words that are theirs. */
 const RIM = 4;
+/** px at both ends of the words to what is drawn, its least drawn width and the mark of its choice. */
+const CLEAR = 6;
 
 /** Signs to a line, of the head and of what is beneath: as it reads best, wide and low, narrow and high. */
 const WRAPS = [
@@ -126,8 +128,8 @@ function waysToSet(ctx: CanvasRenderingContext2D, { head, more }: PlaceWords): r
     lines.reduce((most, line) => Math.max(most, ctx.measureText(line).width), 0);
   const ways: Laid[] = [];
   for (const [i, [ofHead, ofMore]] of WRAPS.entries()) {
-    const heads = linesOf(head, ofHead, LINES);
-    const rests = linesOf(more, ofMore, LINES);
+    const heads = evenLines(head, ofHead, LINES);
+    const rests = evenLines(more, ofMore, LINES);
     const same = ways.some((way) => way.heads.length === heads.length && way.rests.length === rests.length);
     if (same) continue;
     ctx.font = `600 ${SIZES.verdict}px ${TEXT_FACE}`;
@@ -158,6 +160,23 @@ export function linesOf(text: string, most: number, lines: number): readonly str
   return out;
 }
 
+/** As many lines as `linesOf`, none longer than it must be: the narrower they are, the more places they fit in. */
+export function evenLines(text: string, most: number, lines: number): readonly string[] {
+  const wide = linesOf(text, most, lines);
+  if (wide.length < 2 || wide.at(-1)!.endsWith(' …')) return wide;
+  let from = Math.ceil(text.length / wide.length) - 1;
+  let even = wide;
+  // between `from`, which is too narrow or as good as can be, and `to`, which has just as many lines
+  let to = most;
+  while (to - from > 1) {
+    const middle = Math.floor((from + to) / 2);
+    const set = linesOf(text, middle, lines);
+    if (set.length === wide.length && !set.at(-1)!.endsWith(' …')) [even, to] = [set, middle];
+    else from = middle;
+  }
+  return even;
+}
+
 /** The free place beside that covers least of what is drawn, near before far; null where there is none. */
 function roomBeside(
   [x, y]: readonly [number, number],
@@ -178,7 +197,7 @@ function roomBeside(
     if (from < 0 || from + across > size.width || over < 0 || over + down > size.height - FOOT) return;
     const ringed = from < x + RING && from + across > x - RING && over < y + RING && over + down > y - RING;
     if (ringed || !room.free(...box) || !edge.free(...box)) return;
-    const cost = cheap + COVERS * covered(...box);
+    const cost = cheap + COVERS * covered(from - CLEAR, over, across + 2 * CLEAR, down);
     if (cost >= least) return;
     least = cost;
     best = { left, top, right, laid };
