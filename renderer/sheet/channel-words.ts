@@ -3,6 +3,7 @@ import { FIGURE_FACE, type Palette, SIZES } from '../look/tokens.ts';
 import { plusMinus } from '../words/band.ts';
 import { figure } from '../words/figure.ts';
 import { type Camera, inView, type Size, toScreen } from './camera.ts';
+import { rimText } from './marks.ts';
 import { type Shown, spanOn } from './overlay.ts';
 import type { Room } from './room.ts';
 import type { Scene } from './scene.ts';
@@ -22,6 +23,8 @@ export function drawChannelWords(
   palette: Palette,
   room: Room,
   spatial: Spatial,
+  /** A picture lies beneath all of them. */
+  onPicture = false,
 ): void {
   if (shown.overlay === 'findings') return;
   const near = spatial.channelsIn(inView(camera, size));
@@ -29,7 +32,7 @@ export function drawChannelWords(
   ctx.font = `${SIZES.note}px ${FIGURE_FACE}`;
   ctx.textBaseline = 'middle';
   ctx.textAlign = 'center';
-  drawChamberWords(ctx, scene, shown, camera, size, palette, room);
+  drawChamberWords(ctx, scene, shown, camera, size, palette, room, onPicture);
   let written = 0;
   for (const index of near) {
     for (let i = scene.first[index]!; i < scene.first[index + 1]! && written < MOST; i += 1) {
@@ -59,6 +62,7 @@ export function drawChannelWords(
       const wide = ctx.measureText(text).width;
       if (Math.abs(b[1] - a[1]) > Math.abs(b[0] - a[0]) * 0.2 || x < 0 || x > size.width || y < 0) continue;
       if (!room.take(x - wide / 2 - 3, y - 7, wide + 6, 14)) continue;
+      if (onPicture) rimText(ctx, text, x, y, palette);
       ctx.fillStyle = palette.soft;
       ctx.fillText(text, x, y);
       written += 1;
@@ -81,6 +85,7 @@ function drawChamberWords(
   size: Size,
   palette: Palette,
   room: Room,
+  onPicture: boolean,
 ): void {
   if (shown.chambers.size === 0) return;
   let written = 0;
@@ -101,6 +106,7 @@ function drawChamberWords(
       ctx.fillStyle = palette.chip;
       ctx.fillRect(x - wide / 2 - 3, y - 8, wide + 6, 16);
     }
+    if (onPicture) rimText(ctx, text, x, y, palette);
     ctx.fillStyle = palette.soft;
     ctx.fillText(text, x, y);
     written += 1;

@@ -144,7 +144,7 @@ function paintChosen(
     ctx.strokeStyle = palette.ink;
     ctx.lineWidth = 1.5;
     ctx.beginPath();
-    ctx.arc(x, y, Math.max(5, (part.value.diameter / 2) * scale) + 4, 0, 2 * Math.PI);
+    ctx.arc(x, y, Math.max(5, (part.value.diameter / 2) * scale) + 3, 0, 2 * Math.PI);
     ctx.stroke();
     return;
   }

@@ -11,18 +11,19 @@ import { portWords } from './words.ts';
 /** A canvas that only remembers which texts were set where; 6 px a sign. */
 function listening() {
   const said: { readonly text: string; readonly y: number }[] = [];
+  const rimmed: string[] = [];
   const ctx = {
     measureText: (text: string) => ({ width: 6 * text.length }),
     fillText: (text: string, _: number, y: number) => said.push({ text, y }),
-    strokeText: () => undefined,
+    strokeText: (text: string) => rimmed.push(text),
   } as unknown as CanvasRenderingContext2D;
-  return { ctx, said };
+  return { ctx, said, rimmed };
 }
 
 const MM = 1e6;
 
 /** Three outlets side by side, each fed from above, so many mm from the lower edge of a slide. */
-function outlets(from: number) {
+function outlets(from: number, onPicture = false) {
   const at = (i: number, y: number) => [(20 + 12 * i) * MM, y * MM] as const;
   const chip = {
     ...emptyChip(),
@@ -47,10 +48,10 @@ function outlets(from: number) {
   const camera = fitted({ left: 0, bottom: 0, right: 76 * MM, top: 26 * MM }, size, INSET);
   const edge = new Room();
   takeEdge(edge, chip, camera, size);
-  const { ctx, said } = listening();
+  const { ctx, said, rimmed } = listening();
   const words = portWords(chip, null).map((entry) => ({ ...entry, figure: '12.5 % ± 1.1 %' }));
-  drawPortWords(ctx, words, camera, size, PALETTES.light, new Room(), edge, new Spatial(chip));
-  return { said, bottom: toScreen(camera, size, [0, 0])[1] };
+  drawPortWords(ctx, words, camera, size, PALETTES.light, new Room(), edge, new Spatial(chip), onPicture);
+  return { said, rimmed, bottom: toScreen(camera, size, [0, 0])[1] };
 }
 
 test('words of ports near the lower edge stand above or beneath its ticks, never across them', () => {
@@ -67,4 +68,10 @@ test('words of ports near the lower edge stand above or beneath its ticks, never
       expect(clear, `${text}, ${from} mm from the edge: ${y} beside ${bottom}`).toBe(true);
     }
   }
+});
+
+test('words over a picture have a rim of ground round each sign, and need none on the bare chip', () => {
+  expect(outlets(8).rimmed).toEqual([]);
+  const { said, rimmed } = outlets(8, true);
+  expect(rimmed).toEqual(said.map(({ text }) => text));
 });

@@ -75,6 +75,20 @@ export const coverage =
     return spatial.runsIn({ left: a, bottom: b, right: c, top: d });
   };
 
+/** A rim of ground round each sign keeps words legible where an edge or a picture lies under them. */
+export function rimText(
+  ctx: CanvasRenderingContext2D,
+  text: string,
+  x: number,
+  y: number,
+  palette: Palette,
+): void {
+  ctx.strokeStyle = palette.chip;
+  ctx.lineWidth = 4;
+  ctx.lineJoin = 'round';
+  ctx.strokeText(text, x, y);
+}
+
 /** Names and figures beside the ports, as many as have room. */
 export function drawPortWords(
   ctx: CanvasRenderingContext2D,
@@ -86,6 +100,8 @@ export function drawPortWords(
   /** What words cross only where they have no other place. */
   edge: Room,
   spatial: Spatial,
+  /** A picture lies beneath all of them. */
+  onPicture = false,
 ): void {
   const covered = coverage(camera, size, spatial);
   const { left: chipLeft, right: chipRight, bottom } = chipOnScreen(spatial.chip.outline, camera, size);
@@ -149,14 +165,9 @@ export function drawPortWords(
     room.fill(left - 2, second, wide + 4, LINE);
     ctx.textAlign = found === 'right' ? 'left' : found === 'left' ? 'right' : 'center';
     const at = found === 'right' ? left : found === 'left' ? left + wide : left + wide / 2;
-    // where the edge runs under the words, a rim of ground round each sign keeps them legible
+    const rim = onPicture || !clear(found);
     const say = (text: string, y: number, colour: string): void => {
-      if (!clear(found)) {
-        ctx.strokeStyle = palette.chip;
-        ctx.lineWidth = 4;
-        ctx.lineJoin = 'round';
-        ctx.strokeText(text, at, y);
-      }
+      if (rim) rimText(ctx, text, at, y, palette);
       ctx.fillStyle = colour;
       ctx.fillText(text, at, y);
     };

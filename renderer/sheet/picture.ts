@@ -144,8 +144,9 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
           d.spatial,
           (entry) => !d.live || entry.alarm,
         );
-        drawPortWords(ctx, d.ports, camera, size, look, room, edge, d.spatial);
-        drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, d.spatial);
+        const onPicture = underlayOf(desk).get() !== null;
+        drawPortWords(ctx, d.ports, camera, size, look, room, edge, d.spatial, onPicture);
+        drawChannelWords(ctx, d.scene, d.shown, camera, size, look, room, d.spatial, onPicture);
         drawScaleBar(ctx, camera, size, look);
         drawPicked(ctx, desk, camera, size, look);
       })(),

@@ -15,8 +15,9 @@ const FOOT = 58;
 const COVERS = 6;
 /** px round the words that are theirs. */
 const RIM = 4;
-/** px at both ends of the words to what is drawn, its least drawn width and the mark of its choice. */
+/** px from the words to what is drawn, its least drawn width and the mark of its choice: at their ends, over and under. */
 const CLEAR = 6;
+const CLEAR_OVER = 3;
 
 /** Signs to a line, of the head and of what is beneath: as it reads best, wide and low, narrow and high. */
 const WRAPS = [
@@ -197,7 +198,8 @@ function roomBeside(
     if (from < 0 || from + across > size.width || over < 0 || over + down > size.height - FOOT) return;
     const ringed = from < x + RING && from + across > x - RING && over < y + RING && over + down > y - RING;
     if (ringed || !room.free(...box) || !edge.free(...box)) return;
-    const cost = cheap + COVERS * covered(from - CLEAR, over, across + 2 * CLEAR, down);
+    const cost =
+      cheap + COVERS * covered(from - CLEAR, over - CLEAR_OVER, across + 2 * CLEAR, down + 2 * CLEAR_OVER);
     if (cost >= least) return;
     least = cost;
     best = { left, top, right, laid };
