@@ -3,7 +3,8 @@ import type { FluidSpec, ShearModel } from '../../solver/fluid/spec.ts';
 import { QuantityField } from '../card/quantity-field.tsx';
 import { RowsField } from '../card/rows-field.tsx';
 import { ChoiceField } from '../card/text-field.tsx';
-import { figure } from '../words/figure.ts';
+import { capital, figure } from '../words/figure.ts';
+import { spoken } from '../words/spoken.ts';
 
 const NAMED = ['water', 'glycerol-water', 'saline', 'culture-medium', 'plasma', 'blood'] as const;
 type Choice = (typeof NAMED)[number] | 'own' | 'power-law' | 'carreau' | 'casson' | 'table';
@@ -246,9 +247,9 @@ function Source({ fluid }: { readonly fluid: FluidSpec }) {
           </p>
         )}
         <p>
-          {known.source}. Holds for {known.range}.
+          {capital(spoken(known.source))}. Holds for {spoken(known.range)}.
         </p>
-        {known.caution && <p>{known.caution}</p>}
+        {known.caution && <p>{spoken(known.caution)}</p>}
       </div>
     );
   } catch (error) {

@@ -156,6 +156,32 @@ test('words keep off what is drawn where there is room beside it', () => {
     ).toBe(false);
 });
 
+test('where words would hide what is drawn only what is missed speaks; the ring of what is found stays', () => {
+  // as at 200 % on a small page: a chip of a few words' width, full of chambers
+  const small = { width: 620, height: 300 };
+  const cells = Array.from({ length: 60 }, (_, i) => {
+    const [x, y] = [(4 + 7 * (i % 10)) * MM, (2 + 4 * Math.floor(i / 10)) * MM];
+    const outline = [
+      [x, y],
+      [x + 5 * MM, y],
+      [x + 5 * MM, y + 2 * MM],
+      [x, y + 2 * MM],
+    ] as const;
+    return { id: `c${i}`, layer: 'flow', outline };
+  });
+  const { lines, rings } = set(
+    [
+      [20, 13],
+      [55, 13],
+    ],
+    small,
+    cells,
+  );
+  expect(rings).toBe(2);
+  expect(lines.some(({ text }) => text.startsWith('0.'))).toBe(true);
+  expect(lines.some(({ text }) => text.startsWith('1.'))).toBe(false);
+});
+
 test('several findings at one place have one ring', () => {
   expect(set([[20, 13]], SIZES[1]!).rings).toBe(1);
   const near = set(

@@ -13,6 +13,8 @@ const MORE = 16;
 const FOOT = 58;
 /** What it costs to cover a run of a channel or a chamber: more than to stand far off. */
 const COVERS = 6;
+/** Words that would cost more hide more than they say: the ring stays, and what is missed speaks all the same. */
+const DEAR = 36;
 /** px round the words that are theirs. */
 const RIM = 4;
 /** px from the words to what is drawn, its least drawn width and the mark of its choice: at their ends, over and under. */
@@ -51,6 +53,7 @@ interface Box {
   readonly top: number;
   readonly right: boolean;
   readonly laid: Laid;
+  readonly cost: number;
 }
 
 /**
@@ -94,7 +97,8 @@ export function drawPlaceWords(
     if (!worded(entry)) continue;
     const place = roomBeside(ring, waysToSet(ctx, entry), inner, size, room, edge, covered);
     if (!place) continue;
-    const { left, top, right, laid } = place;
+    const { left, top, right, laid, cost } = place;
+    if (cost > DEAR && !entry.alarm) continue;
     const { heads, rests, wide, high } = laid;
     const x = right ? left + wide : left;
     room.fill(left - RIM, top - 2, wide + 2 * RIM, high + 4);
@@ -202,7 +206,7 @@ function roomBeside(
       cheap + COVERS * covered(from - CLEAR, over - CLEAR_OVER, across + 2 * CLEAR, down + 2 * CLEAR_OVER);
     if (cost >= least) return;
     least = cost;
-    best = { left, top, right, laid };
+    best = { left, top, right, laid, cost };
   };
   for (const laid of ways) {
     const { wide, high } = laid;

@@ -1,5 +1,5 @@
 /** Units that follow a figure in the sentences that the solver and people write. */
-const UNIT = String.raw`(?:%|°C|[nµu]?m\b|mm\b|[µumn]?L\b|[µun]L/min|[kmM]?Pa\b|GPa\b|mbar\b|bar\b|psi\b|m?s\b|min\b|h\b|kg/|mol/|times\b)`;
+const UNIT = String.raw`(?:%|°C|[nµu]?m\b|mm\b|[µumn]?L\b|[µun]L/min|m?Pa s\b|[kmM]?Pa\b|GPa\b|mbar\b|bar\b|psi\b|m?s\b|min\b|h\b|kg/|mol/|times\b)`;
 const FIGURE = new RegExp(String.raw`(\d) (?=${UNIT})`, 'g');
 const NAMED = /\b(junction|port|chamber|via|channel|keep-out):(?=\S)/g;
 

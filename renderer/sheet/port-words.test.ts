@@ -3,7 +3,7 @@ import { PALETTES } from '../look/tokens.ts';
 import { emptyChip } from '../testing/chips.ts';
 import { fitted, INSET, toScreen } from './camera.ts';
 import { TICKS, takeEdge } from './edge.ts';
-import { drawPortWords } from './marks.ts';
+import { drawPortWords } from './port-words.ts';
 import { Room } from './room.ts';
 import { Spatial } from './spatial.ts';
 import { portWords } from './words.ts';
@@ -23,7 +23,7 @@ function listening() {
 const MM = 1e6;
 
 /** Three outlets side by side, each fed from above, so many mm from the lower edge of a slide. */
-function outlets(from: number, onPicture = false) {
+function outlets(from: number, onPicture = false, width = 900) {
   const at = (i: number, y: number) => [(20 + 12 * i) * MM, y * MM] as const;
   const chip = {
     ...emptyChip(),
@@ -44,7 +44,7 @@ function outlets(from: number, onPicture = false) {
       tubing: [],
     })),
   };
-  const size = { width: 900, height: 360 };
+  const size = { width, height: 360 };
   const camera = fitted({ left: 0, bottom: 0, right: 76 * MM, top: 26 * MM }, size, INSET);
   const edge = new Room();
   takeEdge(edge, chip, camera, size);
@@ -74,4 +74,12 @@ test('words over a picture have a rim of ground round each sign, and need none o
   expect(outlets(8).rimmed).toEqual([]);
   const { said, rimmed } = outlets(8, true);
   expect(rimmed).toEqual(said.map(({ text }) => text));
+});
+
+test('where names and figures have no room beside one another, every port keeps its name', () => {
+  const { said } = outlets(8, false, 560);
+  expect(said.filter(({ text }) => text.startsWith('out'))).toHaveLength(3);
+  const figures = said.filter(({ text }) => text.startsWith('12.5'));
+  expect(figures.length).toBeGreaterThan(0);
+  expect(figures.length).toBeLessThan(3);
 });
