@@ -1,4 +1,6 @@
-import { useEffect, useId, useState } from 'react';
+import { useEffect, useId, useLayoutEffect, useRef, useState } from 'react';
+import { flushSync } from 'react-dom';
+import { usePage } from '../page/context.tsx';
 
 /** A name to edit; refused ones stay in the field with the reason beside it. */
 export function TextField({
@@ -63,8 +65,13 @@ export function ChoiceField<T extends string>({
   /** A sentence refuses it. */
   readonly onAccept: (value: T) => unknown;
 }) {
+  const { desk } = usePage();
   const id = useId();
   const [fault, setFault] = useState('');
+  const newest = useRef(onAccept);
+  useLayoutEffect(() => {
+    newest.current = onAccept;
+  });
   return (
     <div className="field">
       <label htmlFor={id}>{label}</label>
@@ -74,7 +81,10 @@ export function ChoiceField<T extends string>({
         aria-invalid={fault !== ''}
         aria-describedby={fault ? `${id}-fault` : undefined}
         onChange={(event) => {
-          const why = onAccept(event.target.value as T);
+          const choice = event.target.value as T;
+          // An edit that is held is shown first, so that this one is made of what it left. It sets the field back.
+          flushSync(desk.project.tell);
+          const why = newest.current(choice);
           setFault(typeof why === 'string' ? why : '');
         }}
         onBlur={() => setFault('')}

@@ -68,8 +68,12 @@ export function showPage({ client, solver, first, build, shown }: Beginning): vo
   followHand(desk, bench);
   tidiedWhenOpened(desk);
   // what the hand does next is done to what is there, whether or not it was shown yet
+  const tell = ({ type, target }: Event): void => {
+    // a list of choices would be drawn with the old one before its field has read the new; it tells by itself
+    if (type !== 'input' || !(target instanceof HTMLSelectElement)) flushSync(desk.project.tell);
+  };
   for (const kind of ['keydown', 'pointerdown', 'wheel', 'input'])
-    window.addEventListener(kind, () => flushSync(desk.project.tell), { capture: true, passive: true });
+    window.addEventListener(kind, tell, { capture: true, passive: true });
 
   setTimeout(() => void bringReading().catch(() => undefined), STARTED);
   const late = new Promise((done) => setTimeout(done, PATIENCE));

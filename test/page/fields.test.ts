@@ -273,6 +273,40 @@ test('nonsense in the fields of every panel: repeating, plots, masks, bringing i
   }
 }, 400_000);
 
+test('a choice that follows an edit at once is made of what that left', async () => {
+  const sitting = await sit();
+  const { page } = sitting;
+  const sheet = page.locator('.sheet-surface').first();
+  try {
+    await page.getByLabel('Size').selectOption('plate');
+    await page.getByRole('button', { name: 'Begin', exact: true }).click();
+    await page.locator('.frame').waitFor();
+    await sheet.focus();
+    await page.keyboard.press('t');
+    for (const place of ['5, 80', '115, 5']) {
+      await page.keyboard.type(place);
+      await page.keyboard.press('Enter');
+    }
+    await answered(page);
+    // 128 outlets have room only with smaller holes: both in one turn of the page, as no hand can be too fast
+    await page.getByLabel('Holes').fill('350 um');
+    await page.evaluate(() => {
+      const labelled = (text: string) =>
+        [...document.querySelectorAll('label')].find((label) => label.textContent === text)!.control!;
+      labelled('Holes').dispatchEvent(new KeyboardEvent('keydown', { key: 'Enter', bubbles: true }));
+      const outlets = labelled('Outlets') as HTMLSelectElement;
+      outlets.value = '7';
+      for (const kind of ['input', 'change']) outlets.dispatchEvent(new Event(kind, { bubbles: true }));
+    });
+    await page.getByRole('tab', { name: 'Ports 129' }).waitFor({ timeout: 60_000 });
+    expect(await page.getByLabel('Outlets').inputValue()).toBe('7');
+    expect(await page.getByLabel('Holes').inputValue()).toBe('350 µm');
+    expect(sitting.errors).toEqual([]);
+  } finally {
+    await sitting.end();
+  }
+}, 200_000);
+
 test('keys that follow each other faster than answers come all count', async () => {
   const folder = mkdtempSync(join(tmpdir(), 'channelwright-steps-'));
   const file = join(folder, 'snake.json');
