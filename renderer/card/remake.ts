@@ -1,5 +1,5 @@
 import type { Chip } from '../../solver/chip/chip.ts';
-import { family, type Made } from '../makers/made.ts';
+import { commonHole, family, type Made } from '../makers/made.ts';
 import { partsOfMade } from '../tools/maker-tools.ts';
 import type { Alteration, PartValue } from '../tools/tool.ts';
 
@@ -8,7 +8,7 @@ export function remade(chip: Chip, name: string, made: Made, label: string): Alt
   const there = family(chip, name);
   const ports = new Map(there.ports.map((port) => [port.id, port]));
   // a hole that was given to one port alone stays its own
-  const common = there.ports[0]?.diameter;
+  const common = commonHole(there.ports);
   const put = partsOfMade(made).map((part): PartValue => {
     const old = part.kind === 'port' ? ports.get(part.value.id) : undefined;
     if (part.kind !== 'port' || !old) return part;

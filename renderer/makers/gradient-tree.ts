@@ -2,7 +2,7 @@ import type { Channel, Chip, Nm, Port } from '../../solver/chip/chip.ts';
 import type { Box } from '../geometry/path.ts';
 import { pathLength } from '../geometry/path.ts';
 import { lengthFigure } from '../words/figure.ts';
-import { family, type Made, type Maker, type Making, NOTHING, sameShape } from './made.ts';
+import { commonHole, family, type Made, type Maker, type Making, NOTHING, sameShape } from './made.ts';
 import { serpentine } from './serpentine.ts';
 
 /**
@@ -132,7 +132,7 @@ function read(chip: Chip, name: string): GradientTreeWishes | null {
     stages,
     width: first.width[0],
     mixing: Math.round(pathLength(top.path)),
-    portDiameter: there.ports[0]?.diameter ?? null,
+    portDiameter: commonHole(there.ports),
   };
   const again = build(name, wishes);
   return typeof again !== 'string' && sameShape(there, again) ? wishes : null;

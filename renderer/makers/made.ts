@@ -1,4 +1,4 @@
-import type { Chamber, Channel, Chip, Point, Port, Target } from '../../solver/chip/chip.ts';
+import type { Chamber, Channel, Chip, Nm, Point, Port, Target } from '../../solver/chip/chip.ts';
 
 /** What a maker puts into a chip. */
 export interface Made {
@@ -39,6 +39,14 @@ export function family(chip: Chip, name: string): Made {
     ports: chip.ports.filter((part) => of(part.id)),
     targets: chip.targets.filter((target) => of('port' in target ? target.port : target.channel)),
   };
+}
+
+/** nm: the diameter that most of the holes have, the first such; null where there are none. One that differs is the user's own. */
+export function commonHole(ports: readonly Port[]): Nm | null {
+  const count = new Map<Nm, number>();
+  for (const { diameter } of ports) count.set(diameter, (count.get(diameter) ?? 0) + 1);
+  const most = Math.max(...count.values());
+  return [...count].find(([, times]) => times === most)?.[0] ?? null;
 }
 
 /** nm: wishes are read back from places that are whole nanometres, which leaves a few to rounding. */

@@ -40,6 +40,28 @@ test('a splitting tree whose holes would run into one another is refused, with w
   expect('made' in splitTree.make('tree 1', { ...wishes, portDiameter: null })).toBe(true);
 });
 
+test('an inlet with a hole of its own keeps it, stands first, and the wish is that of the others', () => {
+  const wishes = {
+    layer: 'flow',
+    levels: 2,
+    box,
+    trunkWidth: 200_000,
+    leafWidth: 100_000,
+    joining: false,
+    portDiameter: 750_000,
+  };
+  const tree = made(splitTree.make('tree 1', wishes));
+  expect(tree.ports.map(({ id }) => id).slice(0, 2)).toEqual(['tree 1-in', 'tree 1-out1']);
+  const [inlet, ...outlets] = tree.ports;
+  const chip = chipOf({ ...tree, ports: [{ ...inlet!, diameter: 1_500_000 }, ...outlets] });
+  const read = splitTree.read(chip, 'tree 1')!;
+  expect(read.portDiameter).toBe(750_000);
+  const again = made(splitTree.make('tree 1', { ...read, levels: 3, portDiameter: 500_000 }));
+  const after = applyEdit(chip, toEdit(chip, remade(chip, 'tree 1', again, 'again')));
+  expect(after.ports.map(({ diameter }) => diameter)).toEqual([1_500_000, ...Array(8).fill(500_000)]);
+  expect(splitTree.read(after, 'tree 1')!.portDiameter).toBe(500_000);
+});
+
 describe('serpentine', () => {
   const wishes = {
     layer: 'flow',

@@ -2,7 +2,7 @@ import type { Channel, Chip, Nm, Port, Target } from '../../solver/chip/chip.ts'
 import type { Box } from '../geometry/path.ts';
 import { tidy } from '../geometry/path.ts';
 import { lengthFigure } from '../words/figure.ts';
-import { family, type Made, type Maker, type Making, sameShape } from './made.ts';
+import { commonHole, family, type Made, type Maker, type Making, sameShape } from './made.ts';
 
 /**
  * A tree from one trunk to 2^n equal paths, left to right in a box: at each level a branch goes to the
@@ -46,6 +46,12 @@ function build(name: string, wishes: SplitTreeWishes): Made {
   const port = (id: string, p: readonly [number, number], drive: Port['drive']): void => {
     if (portDiameter !== null) ports.push({ id, at: p, layer, diameter: portDiameter, drive, tubing: [] });
   };
+  // first, so that it stays so when leaves are added
+  port(
+    `${name}-${joining ? 'out' : 'in'}`,
+    [at(0), heightOf(0, 0)],
+    joining ? { kind: 'pressure', pressure: 0 } : { kind: 'flow', flow: 1e-8 / 60 },
+  );
   for (let level = 0; level <= levels; level += 1) {
     const width = widthAt(wishes, level);
     for (let index = 0; index < 2 ** level; index += 1) {
@@ -75,11 +81,6 @@ function build(name: string, wishes: SplitTreeWishes): Made {
       }
     }
   }
-  port(
-    `${name}-${joining ? 'out' : 'in'}`,
-    [at(0), heightOf(0, 0)],
-    joining ? { kind: 'pressure', pressure: 0 } : { kind: 'flow', flow: 1e-8 / 60 },
-  );
   return { channels, chambers: [], ports, targets };
 }
 
@@ -118,7 +119,6 @@ function read(chip: Chip, name: string): SplitTreeWishes | null {
     const top = outer(leaf, joining);
     const low = outer(last, joining);
     const half = (top[1] - low[1]) / (2 ** levels - 1) / 2;
-    const port = there.ports[0];
     const wishes: SplitTreeWishes = {
       layer: trunk.layer,
       levels,
@@ -131,7 +131,7 @@ function read(chip: Chip, name: string): SplitTreeWishes | null {
       trunkWidth: trunk.width[0],
       leafWidth: leaf.width[0],
       joining,
-      portDiameter: port ? port.diameter : null,
+      portDiameter: commonHole(there.ports),
     };
     if (sameShape(there, build(name, wishes))) return wishes;
   }
