@@ -16,6 +16,12 @@ const types = (target: EventTarget | null): boolean =>
 /** With Ctrl these are a field's own: they mean what is typed in it. */
 const OF_FIELDS = ['c', 'v', 'x', 'a', 'z', 'y'];
 
+/** Escape closed the dialog already, and the page has not heard of it yet: the next key is for the page. */
+const shut = (): boolean => {
+  const dialogs = [...document.querySelectorAll('dialog')];
+  return dialogs.length > 0 && dialogs.every((dialog) => !dialog.open);
+};
+
 /**
  * Keys for the whole page. In a field they are the field's; in a table arrows and Enter are the table's;
  * on the sheet figures and arrows go to the tool at hand; all else are commands.
@@ -73,7 +79,7 @@ export function startKeyboard({ desk, bench, commands }: Page): () => void {
     const { palette, files } = desk.view.get();
     const inField = types(event.target);
     const held = event.ctrlKey || event.metaKey;
-    if (palette || files) {
+    if ((palette || files) && !shut()) {
       // the browser must not take for its own what is a command outside of the dialog
       if (held && !OF_FIELDS.includes(event.key.toLowerCase()) && commandOf(event)) event.preventDefault();
       return;

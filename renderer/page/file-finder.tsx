@@ -1,4 +1,4 @@
-import { useCallback, useEffect, useRef, useState } from 'react';
+import { useCallback, useLayoutEffect, useRef, useState } from 'react';
 import type { Output } from '../../main/contract/contract.ts';
 import { Problem } from '../../solver/problem/problem.ts';
 import { useStore } from '../state/store.ts';
@@ -31,7 +31,8 @@ function Finder({ wish }: { readonly wish: FileWish }) {
     },
     [desk],
   );
-  useEffect(() => {
+  // open as soon as it is there: keys go by that
+  useLayoutEffect(() => {
     dialog.current?.showModal();
     void go();
   }, [go]);

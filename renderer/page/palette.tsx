@@ -1,4 +1,4 @@
-import { useEffect, useId, useMemo, useRef, useState } from 'react';
+import { useEffect, useId, useLayoutEffect, useMemo, useRef, useState } from 'react';
 import { keyShown } from '../commands/command.ts';
 import { findCommands } from '../commands/find.ts';
 import { useStore } from '../state/store.ts';
@@ -20,13 +20,19 @@ function Finder() {
   const dialog = useRef<HTMLDialogElement>(null);
   const found = useMemo(() => findCommands(commands.all, words), [commands, words]);
   const now = Math.min(at, found.length - 1);
-  useEffect(() => {
-    const before = document.activeElement;
+  const before = useRef<Element | null>(null);
+  // open as soon as it is there: keys go by that
+  useLayoutEffect(() => {
+    before.current = document.activeElement;
     dialog.current?.showModal();
-    return () => {
-      if (before instanceof HTMLElement) before.focus();
-    };
   }, []);
+  // what lies behind an open dialog takes no focus: given back once it is gone
+  useEffect(
+    () => () => {
+      if (before.current instanceof HTMLElement) before.current.focus();
+    },
+    [],
+  );
   useEffect(() => {
     list.current?.children[now]?.scrollIntoView({ block: 'nearest' });
   }, [now]);

@@ -127,6 +127,21 @@ test('keys: on the sheet, in fields, in dialogs, held, of other layouts', async 
     await page.keyboard.press('Escape');
     await dialog.waitFor({ state: 'detached' });
 
+    // one that the browser closed takes no key, also where the page has not heard of it yet
+    await sheet(sitting).focus();
+    await page.keyboard.press('Control+s');
+    await page.getByLabel('File name').waitFor();
+    await page.evaluate(() => {
+      document.querySelector('dialog')!.close();
+      const slash = { key: '/', code: 'Slash', bubbles: true, cancelable: true };
+      document.activeElement!.dispatchEvent(new KeyboardEvent('keydown', slash));
+    });
+    await dialog.waitFor();
+    await page.getByLabel('File name').waitFor({ state: 'detached' });
+    await page.keyboard.press('Escape');
+    await dialog.waitFor({ state: 'detached' });
+    expect(await sheet(sitting).evaluate((element) => element === document.activeElement)).toBe(true);
+
     // figures typed while drawing are the tool's: digits show no overlay, letters of a unit are no command
     await sheet(sitting).focus();
     await page.keyboard.press('c');
