@@ -1,10 +1,9 @@
-const query = typeof matchMedia === 'function' ? matchMedia('(prefers-reduced-motion: reduce)') : null;
+import { wish } from './media.ts';
+
+const still = wish('(prefers-reduced-motion: reduce)');
 
 /** Whether the system lets things move. */
-export const motionAllowed = (): boolean => !query?.matches;
+export const motionAllowed = (): boolean => !still.holds();
 
 /** Calls `listener` when that changes; returns how to stop. */
-export function onMotion(listener: () => void): () => void {
-  query?.addEventListener('change', listener);
-  return () => query?.removeEventListener('change', listener);
-}
+export const onMotion = still.listen;

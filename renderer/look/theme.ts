@@ -1,16 +1,17 @@
+import { wish } from './media.ts';
 import { FORCED, PALETTES, type Palette, type Scheme } from './tokens.ts';
 
 /** What the person chose: the system's own light or dark, or one of them always. */
 export type SchemeChoice = 'system' | Scheme;
 
-const dark = typeof matchMedia === 'function' ? matchMedia('(prefers-color-scheme: dark)') : null;
+const dark = wish('(prefers-color-scheme: dark)');
 /** Colours that the person's system imposes on every page. */
-const forced = typeof matchMedia === 'function' ? matchMedia('(forced-colors: active)') : null;
+const forced = wish('(forced-colors: active)');
 let choice: SchemeChoice = 'system';
 const listeners = new Set<() => void>();
 
-export const scheme = (): Scheme => (choice === 'system' ? (dark?.matches ? 'dark' : 'light') : choice);
-export const palette = (): Palette => (forced?.matches ? FORCED : PALETTES[scheme()]);
+export const scheme = (): Scheme => (choice === 'system' ? (dark.holds() ? 'dark' : 'light') : choice);
+export const palette = (): Palette => (forced.holds() ? FORCED : PALETTES[scheme()]);
 
 /**
  * The palette as plain colours, for what reads colours by itself and knows no names that the system gives:
@@ -18,7 +19,7 @@ export const palette = (): Palette => (forced?.matches ? FORCED : PALETTES[schem
  */
 export function plainPalette(): Palette {
   const named = palette();
-  if (!forced?.matches) return named;
+  if (!forced.holds()) return named;
   const probe = document.createElement('span');
   probe.style.setProperty('forced-color-adjust', 'none');
   document.body.append(probe);
@@ -41,8 +42,8 @@ function apply(): void {
 
 /** Puts the palette on the page and keeps it in step with the system. */
 export function startTheme(): void {
-  dark?.addEventListener('change', apply);
-  forced?.addEventListener('change', apply);
+  dark.listen(apply);
+  forced.listen(apply);
   apply();
 }
 

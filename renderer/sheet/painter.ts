@@ -15,6 +15,8 @@ export interface Painter {
   resize(size: Size): void;
   /** Draws again at the next frame. */
   redraw(...sheets: SheetName[]): void;
+  /** A sheet that has nothing on it is better away: without a graphics card each costs a frame as much as a full one. */
+  show(sheet: SheetName, shown: boolean): void;
   /** Draws at once. */
   drawNow(): void;
   destroy(): void;
@@ -47,6 +49,9 @@ export function createPainter(
     },
     redraw(...sheets) {
       for (const name of sheets) layers.get(name)!.batchDraw();
+    },
+    show(name, shown) {
+      layers.get(name)!.visible(shown);
     },
     drawNow() {
       for (const layer of layers.values()) layer.draw();

@@ -157,6 +157,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       })(),
   });
 
+  const showFlow = (): void => painter.show('flow', desk.view.get().overlay === 'speed');
   const drawAll = (): void => painter.redraw('chip', 'flow', 'marks', 'hand');
   let answer = desk.solver.solved.get();
   const drawAnswer = (): void => {
@@ -174,6 +175,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
       const before = seen;
       seen = view;
       if (view.size !== before.size) painter.resize(view.size);
+      if (view.overlay !== before.overlay) showFlow();
       if (view.camera !== before.camera) painter.redraw('chip', 'flow', 'marks', 'hand');
       else if (view.overlay !== before.overlay || view.streamlines !== before.streamlines)
         painter.redraw('chip', 'flow', 'marks');
@@ -211,6 +213,7 @@ export function createPicture(container: HTMLDivElement, desk: Desk, bench: Work
   );
   const fonts = (): void => painter.redraw('marks', 'chip');
   document.fonts.addEventListener('loadingdone', fonts);
+  showFlow();
   painter.drawNow();
   return () => {
     document.fonts.removeEventListener('loadingdone', fonts);

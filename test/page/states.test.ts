@@ -125,6 +125,29 @@ test('motion only where it is allowed; forced colours; every panel, light and da
   }
 }, 200_000);
 
+test('the colours follow the system at any moment, also while the marks of the flow move', async () => {
+  const sitting = await sit();
+  const { page } = sitting;
+  try {
+    await page.getByRole('button', { name: /Gradient/ }).click();
+    await page.locator('.frame').waitFor();
+    await answered(page);
+    await press(page, '2');
+    for (let i = 0; i < 12; i += 1) {
+      const colorScheme = i % 2 === 0 ? 'dark' : 'light';
+      await page.emulateMedia({ colorScheme });
+      await page.waitForFunction(
+        (wanted) => document.documentElement.style.colorScheme === wanted,
+        colorScheme,
+        { timeout: 10_000 },
+      );
+    }
+    expect(sitting.errors).toEqual([]);
+  } finally {
+    await sitting.end();
+  }
+}, 200_000);
+
 test('a remedy is made by its button and its finding is gone; a table is edited in place, nonsense is not', async () => {
   const folder = mkdtempSync(join(tmpdir(), 'channelwright-states-'));
   const file = join(folder, 'narrow.json');
