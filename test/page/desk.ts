@@ -76,14 +76,20 @@ const NOTHING = 'nothing copied yet';
  * is read back is waited for.
  */
 export async function copied(page: Page, act: () => Promise<unknown>): Promise<string> {
+  /** A function of the page that returns a promise is not asked again: its first answer would count. */
+  const read = async (wanted: (text: string) => boolean): Promise<string> => {
+    const until = Date.now() + 30_000;
+    for (;;) {
+      const text = await page.evaluate(() => navigator.clipboard.readText());
+      if (wanted(text)) return text;
+      if (Date.now() > until) throw new Error(`The clipboard holds only ${JSON.stringify(text)}.`);
+      await page.waitForTimeout(20);
+    }
+  };
   await page.evaluate((text) => navigator.clipboard.writeText(text), NOTHING);
-  await page.waitForFunction(async (text) => (await navigator.clipboard.readText()) === text, NOTHING);
+  await read((text) => text === NOTHING);
   await act();
-  const text = await page.waitForFunction(async (nothing) => {
-    const now = await navigator.clipboard.readText();
-    return now !== nothing && now !== '' && now;
-  }, NOTHING);
-  return (await text.jsonValue()) || '';
+  return read((text) => text !== NOTHING && text !== '');
 }
 
 /** The whole chip's description, by way of the clipboard; the sheet has the focus then and all parts are chosen. */

@@ -148,6 +148,8 @@ test('nonsense in the fields of every maker: kept, explained, never applied, nev
         timeout: 60_000,
         interval: 100,
       });
+      // the next frame puts the focus into the card; only then the sheet may have it
+      await page.waitForFunction(() => document.activeElement?.closest('.card') !== null);
       const chosen = await page.locator('.card h2').textContent();
       const before = await chipNow(page);
       // back to it by its table
