@@ -15,7 +15,7 @@ export interface Painter {
   resize(size: Size): void;
   /** Draws again at the next frame. */
   redraw(...sheets: SheetName[]): void;
-  /** A sheet that has nothing on it is better away: without a graphics card each costs a frame as much as a full one. */
+  /** A sheet that has nothing on it is better away: it would be laid over the others in every frame all the same. */
   show(sheet: SheetName, shown: boolean): void;
   /** Draws at once. */
   drawNow(): void;

@@ -128,13 +128,26 @@ export function drawPlaceWords(
   }
 }
 
-function waysToSet(ctx: CanvasRenderingContext2D, { head, more }: PlaceWords): readonly Laid[] {
+/** The lines of each way, kept with the words: they are drawn anew in every frame of a pan. */
+const parted = new WeakMap<PlaceWords, readonly Pick<Laid, 'heads' | 'rests'>[]>();
+
+function partedOf(entry: PlaceWords): readonly Pick<Laid, 'heads' | 'rests'>[] {
+  let ways = parted.get(entry);
+  if (!ways) {
+    ways = WRAPS.map(([ofHead, ofMore]) => ({
+      heads: evenLines(entry.head, ofHead, LINES),
+      rests: evenLines(entry.more, ofMore, LINES),
+    }));
+    parted.set(entry, ways);
+  }
+  return ways;
+}
+
+function waysToSet(ctx: CanvasRenderingContext2D, entry: PlaceWords): readonly Laid[] {
   const widest = (lines: readonly string[]): number =>
     lines.reduce((most, line) => Math.max(most, ctx.measureText(line).width), 0);
   const ways: Laid[] = [];
-  for (const [i, [ofHead, ofMore]] of WRAPS.entries()) {
-    const heads = evenLines(head, ofHead, LINES);
-    const rests = evenLines(more, ofMore, LINES);
+  for (const [i, { heads, rests }] of partedOf(entry).entries()) {
     const same = ways.some((way) => way.heads.length === heads.length && way.rests.length === rests.length);
     if (same) continue;
     ctx.font = `600 ${SIZES.verdict}px ${TEXT_FACE}`;

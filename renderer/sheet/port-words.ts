@@ -62,7 +62,7 @@ export function drawPortWords(
     widths: readonly number[],
   ): Place | null => {
     const wide = Math.max(...widths);
-    const able: Place[] = [];
+    let crossing: Place | null = null;
     for (const where of OTHERS[side]) {
       if (where === 'around' && widths.length < 2) continue;
       if (where === 'beyond' && y >= chip.bottom) continue;
@@ -74,15 +74,19 @@ export function drawPortWords(
             ? x - away - wide
             : overOf(x, wide, chip.left, chip.right);
       if (left <= 2 || left + wide >= size.width - 2) continue;
-      const under = covered(left, tops[0]!, wide, tops.at(-1)! + LINE - tops[0]!);
-      if (where !== side && under > (where === 'around' ? 1 : 0)) continue;
       const align = where === 'right' ? 'left' : where === 'left' ? 'right' : 'center';
       const share = { left: 0, center: 0.5, right: 1 }[align];
       const slots = widths.map((own, i): Slot => [left + share * (wide - own), tops[i]!, own]);
+      // where ports crowd this says no at once, and what is drawn need not be searched
       if (!free(room, slots)) continue;
-      able.push({ slots, align, crosses: !free(edge, slots) });
+      if (where !== side) {
+        const under = covered(left, tops[0]!, wide, tops.at(-1)! + LINE - tops[0]!);
+        if (under > (where === 'around' ? 1 : 0)) continue;
+      }
+      if (free(edge, slots)) return { slots, align, crosses: false };
+      crossing ??= { slots, align, crosses: true };
     }
-    return able.find(({ crosses }) => !crosses) ?? able[0] ?? null;
+    return crossing;
   };
 
   const take = ({ slots }: Place): void => {

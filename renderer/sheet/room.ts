@@ -14,41 +14,32 @@ export class Room {
   fill(left: number, top: number, width: number, height: number): void {
     const index = this.boxes.length;
     this.boxes.push(left, top, left + width, top + height);
-    this.each(left, top, width, height, (list) => list.push(index));
+    for (let x = Math.floor(left / SIDE); x <= Math.floor((left + width) / SIDE); x += 1)
+      for (let y = Math.floor(top / SIDE); y <= Math.floor((top + height) / SIDE); y += 1) {
+        const key = keyOf(x, y);
+        const list = this.cells.get(key);
+        if (list) list.push(index);
+        else this.cells.set(key, [index]);
+      }
   }
 
   free(left: number, top: number, width: number, height: number): boolean {
-    let free = true;
-    this.each(left, top, width, height, (list) => {
-      for (const i of list)
-        if (
-          left < this.boxes[i + 2]! &&
-          left + width > this.boxes[i]! &&
-          top < this.boxes[i + 3]! &&
-          top + height > this.boxes[i + 1]!
-        )
-          free = false;
-    });
-    return free;
-  }
-
-  private each(
-    left: number,
-    top: number,
-    width: number,
-    height: number,
-    act: (list: number[]) => void,
-  ): void {
-    const SIDE = 64;
+    const { boxes } = this;
     for (let x = Math.floor(left / SIDE); x <= Math.floor((left + width) / SIDE); x += 1)
-      for (let y = Math.floor(top / SIDE); y <= Math.floor((top + height) / SIDE); y += 1) {
-        const key = x * 100_003 + y;
-        let list = this.cells.get(key);
-        if (!list) {
-          list = [];
-          this.cells.set(key, list);
-        }
-        act(list);
-      }
+      for (let y = Math.floor(top / SIDE); y <= Math.floor((top + height) / SIDE); y += 1)
+        for (const i of this.cells.get(keyOf(x, y)) ?? NONE)
+          if (
+            left < boxes[i + 2]! &&
+            left + width > boxes[i]! &&
+            top < boxes[i + 3]! &&
+            top + height > boxes[i + 1]!
+          )
+            return false;
+    return true;
   }
 }
+
+/** px */
+const SIDE = 64;
+const NONE: readonly number[] = [];
+const keyOf = (x: number, y: number): number => x * 100_003 + y;
